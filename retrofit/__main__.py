@@ -1,0 +1,5 @@
+"""Let `python -m retrofit` do what the command does."""
+
+from retrofit.cli import main
+
+main()
