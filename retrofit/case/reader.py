@@ -1,0 +1,293 @@
+"""Read a case file, or say everything that is wrong with it at once.
+
+The bytes become text, the text TOML, the TOML a model. A fault in an early step hides the later ones;
+within the model every fault is found. Each carries the line of its key.
+"""
+
+from __future__ import annotations
+
+import os
+import re
+import stat
+import tomllib
+from collections.abc import Iterator, Mapping, Sequence
+from pathlib import Path
+from typing import Any
+
+from pydantic import ValidationError
+from pydantic_core import ErrorDetails
+
+from retrofit.case.model import MOST_CANDIDATES, TABLES, Case, CaseFile, Default, Table, WhyDefault
+from retrofit.case.positions import key_lines
+from retrofit.errors import CaseFileError, Problem, QuantityError, UnknownRefrigerantError
+from retrofit.refrigerants import find
+from retrofit.units import close_to, described, listed, parse_quantity, quoted, shown
+
+LARGEST_FILE_BYTES = 1_000_000
+
+_Where = tuple[str | int, ...]
+
+
+def read_case(path: str | os.PathLike[str]) -> Case:
+    """Return the case a file describes.
+
+    Args:
+        path: A TOML file in UTF-8, with or without a byte order mark, at most 1 MB. [-]
+    Returns: The case in SI, with what was written and every default taken.
+    Raises: CaseFileError with every problem found and its line; nothing else for any file.
+    """
+    name = shown(os.fspath(path), 200)
+    text = _text_of(os.fspath(path), name)
+    data, lines = _parsed(text, name)
+    problems = list(_problems_between_keys(data))
+    try:
+        model = CaseFile.model_validate(data)
+    except ValidationError as error:
+        found = error.errors(include_url=False)
+        problems += [(_where(detail), _complaint(detail, data)) for detail in found]
+        model = None
+    if problems or model is None:
+        raise CaseFileError(name, [_located(where, text, lines) for where, text in problems])
+    return _case(model, data, name, text)
+
+
+def _case(model: CaseFile, data: Mapping[str, Any], name: str, text: str) -> Case:
+    return Case(
+        title=model.title or Path(name).stem,
+        about=model.about,
+        plant=model.plant,
+        duty=model.duty,
+        compressor=model.compressor,
+        compare=model.compare,
+        path=name,
+        text=text,
+        given=dict(_given(data)),
+        defaults=tuple(_defaults(model)),
+    )
+
+
+def _given(data: Mapping[str, Any], table: str = "") -> Iterator[tuple[str, str]]:
+    for key, value in data.items():
+        if isinstance(value, dict):
+            yield from _given(value, f"{key}.")
+        elif isinstance(value, list):
+            yield table + key, ", ".join(str(item) for item in value)
+        else:
+            yield table + key, str(value)
+
+
+def _defaults(model: CaseFile) -> Iterator[Default]:
+    for name, table_class in TABLES.items():
+        written = getattr(model, name).model_fields_set
+        for field_name, field in table_class.model_fields.items():
+            why = next((extra.text for extra in field.metadata if isinstance(extra, WhyDefault)), None)
+            if why is not None and field_name not in written:
+                yield Default(f"{name}.{field.alias}", str(field.default), why)
+
+
+# Bytes to text
+
+
+def _text_of(path: str, name: str) -> str:
+    try:
+        raw = _bytes_of(path, name)
+    except FileNotFoundError:
+        raise _whole_file(
+            name, "there is no such file; check the path, or start one with `retrofit new`"
+        ) from None
+    except PermissionError:
+        raise _whole_file(name, "it may not be read; check its permissions") from None
+    except (OSError, ValueError) as error:
+        reason = error.strerror if isinstance(error, OSError) else str(error)
+        raise _whole_file(name, f"it cannot be read ({shown(str(reason))}); check the path") from None
+    try:
+        return raw.decode("utf-8-sig")
+    except UnicodeDecodeError as error:
+        line = raw.count(b"\n", 0, error.start) + 1
+        message = "this is not text in UTF-8; save the file as plain text in UTF-8 from a text editor"
+        raise CaseFileError(name, [Problem(line, "", message)]) from None
+
+
+def _bytes_of(path: str, name: str) -> bytes:
+    mode = os.stat(path).st_mode
+    if stat.S_ISDIR(mode):
+        raise _whole_file(name, "this is a folder; name the case file in it")
+    if not stat.S_ISREG(mode):
+        raise _whole_file(name, "this is not an ordinary file; name a case file")
+    with open(path, "rb") as file:
+        raw = file.read(LARGEST_FILE_BYTES + 1)
+    if len(raw) > LARGEST_FILE_BYTES:
+        raise _whole_file(name, "the file is larger than 1 MB; a case file has some dozens of lines")
+    return raw
+
+
+def _whole_file(name: str, message: str) -> CaseFileError:
+    return CaseFileError(name, [Problem(0, "", message)])
+
+
+# Text to TOML
+
+_PLACE = re.compile(r" \(at line ([0-9]+), column [0-9]+\)$")
+_PLAIN_WORDS = {
+    "Invalid value": 'the value cannot be read; text stands in double quotes, as in cooling = "120 kW"',
+    "Expected '='": 'an equals sign is missing; a line reads key = "value", a table begins with [name]',
+    "Invalid statement": 'a line reads key = "value", a table begins with [name], a remark with #',
+    "Cannot overwrite a value": "the same key is given twice; keep one of them",
+    "Cannot declare": "the same table is given twice; put its keys under one heading",
+    "Cannot mutate": "the same table is given twice; put its keys under one heading",
+    "Expected newline": "something is left over after the value; one line holds one key",
+    "Unclosed array": "a list is not closed; it ends with ]",
+    "Unterminated string": "a text is not closed; it ends with the quotation mark it began with",
+    "Illegal character": "a character is not allowed here; a text ends on its line, in double quotes",
+    "Duplicate inline table key": "the same key is given twice; keep one of them",
+}
+
+
+def _parsed(text: str, name: str) -> tuple[dict[str, Any], dict[_Where, int]]:
+    try:
+        return tomllib.loads(text), key_lines(text)
+    except tomllib.TOMLDecodeError as error:
+        raise CaseFileError(name, [_syntax_problem(str(error), text)]) from None
+    except RecursionError:
+        raise _whole_file(name, "values are nested too deeply; a case has tables and single values") from None
+    except ValueError:
+        raise _whole_file(name, "a number has too many digits; write numbers of ordinary size") from None
+
+
+def _syntax_problem(message: str, text: str) -> Problem:
+    place = _PLACE.search(message)
+    line = int(place.group(1)) if place else text.count("\n") + 1
+    reason = message[: place.start()] if place else message
+    plain = next((words for start, words in _PLAIN_WORDS.items() if reason.startswith(start)), "")
+    detail = shown(reason, 120)
+    return Problem(line, "", f"not valid TOML: {plain} ({detail})" if plain else f"not valid TOML: {detail}")
+
+
+# TOML to model
+
+
+def _where(detail: ErrorDetails) -> _Where:
+    return tuple(detail["loc"])
+
+
+def _located(where: _Where, text: str, lines: Mapping[_Where, int]) -> Problem:
+    """Give a problem the line of its key, or of the nearest table around it that is there."""
+    for length in range(len(where), 0, -1):
+        if where[:length] in lines:
+            return Problem(lines[where[:length]], _written(where), text)
+    return Problem(0, _written(where), text)
+
+
+def _written(where: _Where) -> str:
+    """Return a path as a user counts: `compare.candidates[1]` is the first."""
+    parts = [f"[{part + 1}]" if isinstance(part, int) else f".{shown(part)}" for part in where]
+    return "".join(parts).removeprefix(".")
+
+
+def _complaint(detail: ErrorDetails, data: Mapping[str, Any]) -> str:
+    """Return a fault that the model found in our own words."""
+    kind, where = detail["type"], _where(detail)
+    if kind == "value_error":
+        return str(detail["ctx"]["error"])
+    if kind == "missing":
+        return _missing(where)
+    if kind == "extra_forbidden":
+        return _unknown_key(where, detail["input"])
+    if kind == "model_type":
+        return f"{described(detail['input'])} stands where a table is needed; begin it with [{where[0]}]"
+    return _not_candidates(detail["input"])
+
+
+def _missing(where: _Where) -> str:
+    if len(where) > 1:
+        return f"is missing; add {where[-1]} to [{where[0]}]{_sample(where)}"
+    needed = [
+        field.alias or "" for field in TABLES[str(where[0])].model_fields.values() if field.is_required()
+    ]
+    return f"the table [{where[0]}] is missing; add it with {listed(needed, 'and')}"
+
+
+def _sample(where: _Where) -> str:
+    samples = {
+        "refrigerant": "R404A",
+        "cooling": "120 kW",
+        "evaporating": "-8 degC",
+        "condensing": "42 degC",
+    }
+    sample = samples.get(str(where[-1]))
+    return f', as in {where[-1]} = "{sample}"' if sample else ', as in candidates = ["R448A", "R449A"]'
+
+
+def _unknown_key(where: _Where, value: object) -> str:
+    key = str(where[-1])
+    table: type[Table] = TABLES[str(where[0])] if len(where) > 1 else CaseFile
+    known = _keys(table)
+    home = next((name for name, other in TABLES.items() if key in _keys(other)), None)
+    place = f"[{where[0]}]" if len(where) > 1 else "the top of the file"
+    thing = "table" if isinstance(value, dict) else "key"
+    if home is not None:
+        return f"{key} does not belong to {place}; move it to [{home}]"
+    meant = close_to(key, known)
+    return f"there is no {thing} {quoted(key)} in {place}{meant}; known are {listed(known, 'and')}"
+
+
+def _keys(table: type[Table]) -> list[str]:
+    return [field.alias or name for name, field in table.model_fields.items()]
+
+
+def _not_candidates(value: object) -> str:
+    how = f'write a list of 1 to {MOST_CANDIDATES} refrigerants, as in ["R448A", "R449A"]'
+    if isinstance(value, list):
+        return f"the list has {len(value)} items; {how}"
+    return f"{described(value)} stands where a list is needed; {how}"
+
+
+# What one key says against another
+
+
+def _problems_between_keys(data: Mapping[str, Any]) -> Iterator[tuple[_Where, str]]:
+    """Yield the faults that need two keys; keys that cannot be read by themselves are passed over."""
+    duty, compare = data.get("duty"), data.get("compare")
+    if isinstance(duty, dict):
+        yield from _evaporating_above_condensing(duty)
+    if isinstance(compare, dict) and isinstance(compare.get("candidates"), list):
+        plant = data.get("plant")
+        existing = plant.get("refrigerant") if isinstance(plant, dict) else None
+        yield from _repeated(compare["candidates"], _designation(existing))
+
+
+def _evaporating_above_condensing(duty: Mapping[str, Any]) -> Iterator[tuple[_Where, str]]:
+    try:
+        T_evap_K = parse_quantity(duty.get("evaporating"), "temperature")
+        T_cond_K = parse_quantity(duty.get("condensing"), "temperature")
+    except QuantityError:
+        return
+    if T_evap_K >= T_cond_K:
+        given = f"{quoted(duty['evaporating'])} is not below condensing {quoted(duty['condensing'])}"
+        yield ("duty", "evaporating"), f"{given}; the evaporating temperature lies below the condensing one"
+
+
+def _repeated(candidates: Sequence[object], existing: str | None) -> Iterator[tuple[_Where, str]]:
+    seen: set[str] = set()
+    for index, item in enumerate(candidates):
+        name = _designation(item)
+        if name is None:
+            continue
+        where = ("compare", "candidates", index)
+        if name == existing:
+            yield (
+                where,
+                f"{name} is the refrigerant in the plant, which is always compared; leave it out here",
+            )
+        elif name in seen:
+            yield where, f"{name} is in the list twice; leave one out"
+        seen.add(name)
+
+
+def _designation(value: object) -> str | None:
+    if not isinstance(value, str):
+        return None
+    try:
+        return find(value).designation
+    except UnknownRefrigerantError:
+        return None

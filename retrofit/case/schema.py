@@ -1,0 +1,22 @@
+"""The JSON Schema of a case file, for editors that complete and check while one types."""
+
+from __future__ import annotations
+
+from typing import Any
+
+from retrofit.case.model import CaseFile
+
+SCHEMA_FILE = "case.schema.json"
+
+
+def case_schema() -> dict[str, Any]:
+    """Return the JSON Schema (draft 2020-12) of a case file, made from the model itself.
+
+    It knows the keys, the form of each value and its unit; ranges and what one key says against
+    another are left to `read_case`.
+    Returns: The schema, ready for `json.dump`. [-]
+    Source: JSON Schema, draft 2020-12.
+    """
+    schema = CaseFile.model_json_schema(by_alias=True)
+    schema["title"] = "Refrigerant changeover case"
+    return {"$schema": "https://json-schema.org/draft/2020-12/schema", **schema}
