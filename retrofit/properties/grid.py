@@ -1,0 +1,142 @@
+"""Smooth interpolation on fixed nodes: cubic curves and bicubic surfaces, on arrays, with NumPy alone.
+
+A curve or surface is held as node values and node derivatives (Hermite form). The derivatives come from
+a cubic spline when the grid is built, so the interpolant is the spline itself, but evaluating it needs
+no more than a node search and a weighted sum, whatever the spacing of the nodes.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+FloatArray = NDArray[np.float64]
+
+
+def node_derivatives(x: FloatArray, values: FloatArray, axis: int) -> FloatArray:
+    """Return the derivatives at the nodes of the cubic spline through them.
+
+    Args:
+        x: Node positions, rising, shape (n,). [any]
+        values: Node values; `axis` has length n. [any]
+        axis: Axis of `values` that runs along `x`. [-]
+    Returns: Derivatives, shaped like `values`. [unit of values / unit of x]
+    Source: cubic spline with not-a-knot ends (de Boor), as in scipy.interpolate.CubicSpline.
+    """
+    from scipy.interpolate import CubicSpline
+
+    slopes = CubicSpline(x, values, axis=axis)(x, 1)
+    return np.ascontiguousarray(slopes, dtype=np.float64)
+
+
+def cell(nodes: FloatArray, x: FloatArray) -> tuple[NDArray[np.intp], FloatArray, FloatArray]:
+    """Return for each position its cell, its place in the cell (0 to 1) and the width of the cell."""
+    left = np.searchsorted(nodes[1:-1], x, side="right")
+    start = nodes[left]
+    width = nodes[left + 1] - start
+    return left, (x - start) / width, width
+
+
+def hermite_weights(t: FloatArray, width: FloatArray) -> tuple[FloatArray, ...]:
+    """Return the weights of left value, left slope, right value and right slope."""
+    t2 = t * t
+    right = t2 * (3.0 - 2.0 * t)
+    right_slope = t2 * (t - 1.0)
+    left_slope = right_slope - t2 + t
+    return 1.0 - right, left_slope * width, right, right_slope * width
+
+
+def hermite_slope_weights(t: FloatArray, width: FloatArray) -> tuple[FloatArray, ...]:
+    """Return the weights of the same four for the first derivative."""
+    bow = 6.0 * t * (1.0 - t) / width
+    return -bow, 1.0 - t * (4.0 - 3.0 * t), bow, t * (3.0 * t - 2.0)
+
+
+Weights = Callable[[FloatArray, FloatArray], tuple[FloatArray, ...]]
+
+
+@dataclass(frozen=True)
+class Curve:
+    """Several quantities along one axis.
+
+    Attributes:
+        x: Node positions, shape (n,).
+        nodes: Values and derivatives, shape (quantities, 2, n).
+    """
+
+    x: FloatArray
+    nodes: FloatArray
+
+    @classmethod
+    def through(cls, x: FloatArray, values: FloatArray) -> Curve:
+        """Return the cubic spline through `values`, shape (quantities, n)."""
+        return cls(x, np.stack([values, node_derivatives(x, values, axis=1)], axis=1))
+
+    def __call__(self, x: FloatArray, *quantities: int, weights: Weights = hermite_weights) -> list[FloatArray]:
+        """Return the asked quantities at `x`."""
+        left, t, width = cell(self.x, x)
+        right = left + 1
+        a, b, c, d = weights(t, width)
+        return [
+            a * value[left] + b * slope[left] + c * value[right] + d * slope[right]
+            for value, slope in (self.nodes[quantity] for quantity in quantities)
+        ]
+
+    def slope(self, x: FloatArray, quantity: int) -> FloatArray:
+        """Return the first derivative of one quantity at `x`."""
+        return self(x, quantity, weights=hermite_slope_weights)[0]
+
+
+@dataclass(frozen=True)
+class Surface:
+    """Several quantities over two axes.
+
+    Attributes:
+        x, y: Node positions, shapes (n,) and (m,).
+        nodes: Value, x, y and xy derivatives, shape (quantities, 4, n * m).
+    """
+
+    x: FloatArray
+    y: FloatArray
+    nodes: FloatArray
+
+    @classmethod
+    def through(cls, x: FloatArray, y: FloatArray, values: FloatArray) -> Surface:
+        """Return the bicubic spline through `values`, shape (quantities, n, m)."""
+        along_x = node_derivatives(x, values, axis=1)
+        along_y = node_derivatives(y, values, axis=2)
+        twist = node_derivatives(y, along_x, axis=2)
+        nodes = np.stack([values, along_x, along_y, twist], axis=1)
+        return cls(x, y, nodes.reshape(len(values), 4, x.size * y.size))
+
+    def __call__(self, x: FloatArray, y: FloatArray, *quantities: int) -> list[FloatArray]:
+        """Return the asked quantities at the points (x, y), which broadcast together."""
+        return self._weighted(x, y, quantities, hermite_weights)
+
+    def slope_y(self, x: FloatArray, y: FloatArray, quantity: int) -> FloatArray:
+        """Return the first derivative along y of one quantity."""
+        return self._weighted(x, y, (quantity,), hermite_slope_weights)[0]
+
+    def _weighted(
+        self, x: FloatArray, y: FloatArray, quantities: Sequence[int], y_weights: Weights
+    ) -> list[FloatArray]:
+        i, t, width_x = cell(self.x, x)
+        j, u, width_y = cell(self.y, y)
+        a0, a1, a2, a3 = hermite_weights(t, width_x)
+        b0, b1, b2, b3 = y_weights(u, width_y)
+        near = i * self.y.size + j
+        far = near + self.y.size
+
+        def point(quantity: int) -> FloatArray:
+            f, fx, fy, fxy = self.nodes[quantity]
+            total = b0 * (a0 * f[near] + a1 * fx[near] + a2 * f[far] + a3 * fx[far])
+            total += b1 * (a0 * fy[near] + a1 * fxy[near] + a2 * fy[far] + a3 * fxy[far])
+            n1, f1 = near + 1, far + 1
+            total += b2 * (a0 * f[n1] + a1 * fx[n1] + a2 * f[f1] + a3 * fx[f1])
+            total += b3 * (a0 * fy[n1] + a1 * fxy[n1] + a2 * fy[f1] + a3 * fxy[f1])
+            return total
+
+        return [point(quantity) for quantity in quantities]
