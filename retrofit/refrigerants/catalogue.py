@@ -4,7 +4,6 @@ from __future__ import annotations
 
 from collections.abc import Iterable
 from dataclasses import replace
-from difflib import get_close_matches
 from functools import cache
 
 from retrofit.errors import UnknownRefrigerantError
@@ -18,7 +17,7 @@ RCL_AGREEMENT = 0.07  # two figures of two printed digits each may differ by thi
 
 def designations() -> tuple[str, ...]:
     """Return the designation of every refrigerant of the catalogue, singles first. [-]"""
-    return tuple(_catalogue())
+    return (*read_table("substances").rows, *read_table("blends").rows)
 
 
 def source(key: str) -> Source:
@@ -45,45 +44,43 @@ def find(name: str) -> Refrigerant:
     designation = _spellings().get(_plain(name))
     if designation is None:
         raise _unknown(name)
-    return _catalogue()[designation]
+    return _build(designation)
 
 
 def _unknown(name: str) -> UnknownRefrigerantError:
-    close = _close(name)
+    close = _close(str(name))
     hint = f"did you mean {' or '.join(close)}?" if close else "list them with 'retrofit refrigerants'"
     known = f"the catalogue holds {len(designations())} ASHRAE designations such as R404A"
     return UnknownRefrigerantError(f'no refrigerant "{name}": {known}; {hint}', close)
 
 
 def _close(name: str) -> tuple[str, ...]:
+    from difflib import get_close_matches  # only a misspelt name needs it
+
     chemical = name.strip().casefold()
-    named = [item.designation for item in _catalogue().values() if chemical in _names(item)]
+    rows = read_table("substances").rows
+    named = [designation for designation, row in rows.items() if chemical in _names(row["chemical_name"])]
     near = get_close_matches(_plain(name), _spellings(), n=3, cutoff=0.6)
     return tuple(dict.fromkeys([*named, *(_spellings()[spelling] for spelling in near)]))
 
 
-def _names(refrigerant: Refrigerant) -> list[str]:
-    return [part.strip("() ") for part in refrigerant.chemical_name.casefold().split(" (") if part]
+def _names(chemical_name: str) -> list[str]:
+    return [part.strip("() ") for part in chemical_name.casefold().split(" (")]
 
 
 def _plain(name: str) -> str:
-    kept = "".join(letter for letter in name.casefold() if letter.isalnum())
+    kept = "".join(letter for letter in str(name).casefold() if letter.isalnum())
     return kept.removeprefix("r")
 
 
 @cache
 def _spellings() -> dict[str, str]:
-    return {_plain(designation): designation for designation in _catalogue()}
+    return {_plain(designation): designation for designation in designations()}
 
 
 @cache
-def _catalogue() -> dict[str, Refrigerant]:
-    disputes = read_disputes()
-    names = (*read_table("substances").rows, *read_table("blends").rows)
-    return {name: _build(name, disputes.get(name, ())) for name in names}
-
-
-def _build(name: str, disputes: tuple[Dispute, ...]) -> Refrigerant:
+def _build(name: str) -> Refrigerant:
+    disputes = read_disputes().get(name, ())
     values = {**_identity(name), **_safety(name), **_boiling(name), **_environment(name), **_use(name)}
     for dispute in disputes:
         values[dispute.field] = _disputed(values[dispute.field], dispute)
