@@ -77,8 +77,11 @@ def _by_class() -> dict[str, tuple[Caution, ...]]:
 
 @cache
 def _by_designation() -> tuple[tuple[Caution, frozenset[str]], ...]:
-    entries = read_toml("cautions")["refrigerant"]
-    return tuple((Caution(**entry), frozenset(names)) for entry in entries if (names := entry.pop("names")))
+    found = []
+    for entry in read_toml("cautions")["refrigerant"]:
+        names = frozenset(entry.pop("names"))
+        found.append((Caution(**entry), names))
+    return tuple(found)
 
 
 @cache
