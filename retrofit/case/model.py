@@ -8,7 +8,7 @@ schema and the value used cannot differ.
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Annotated, Any
 
 from pydantic import BaseModel, ConfigDict, Field
@@ -39,7 +39,9 @@ _OIL_SHORT = (
 _Temperature = Quantity("temperature", "-120 degC", "150 degC", "vapour-compression plants work within it")
 _Superheat = Quantity("temperature difference", "0 K", "80 K", "more points to a reading error")
 _Subcooling = Quantity("temperature difference", "0 K", "50 K", "counted below the bubble point")
-_Efficiency = Quantity("fraction", "0 %", "100 %", "no machine does better than the ideal one", True, "0.70")
+_Efficiency = Quantity(
+    "fraction", "0 %", "100 %", "no machine does better than the ideal one", above_low=True, example="0.70"
+)
 _Convention = Choice(("dew", "mean"))
 
 
@@ -67,7 +69,7 @@ class Plant(Table):
 
     refrigerant: Annotated[str, Refrigerant()] = _key("refrigerant", "Refrigerant in the plant today.")
     charge_kg: Annotated[
-        float | None, Quantity("mass", "0 kg", "1000000 kg", "a plant that runs has a charge", True)
+        float | None, Quantity("mass", "0 kg", "1000000 kg", "a plant that runs has one", above_low=True)
     ] = _key("charge", "Mass of refrigerant in the whole plant.", None)
     oil: Annotated[str | None, Choice(OILS, _OIL_SHORT)] = _key("oil", "Kind of compressor oil.", None)
     altitude_m: Annotated[
@@ -92,10 +94,12 @@ class Duty(Table):
     """What the plant has to do, at the temperatures it does it."""
 
     cooling_W: Annotated[
-        float, Quantity("power", "0 W", "1000 MW", "a duty is above zero and within any single plant", True)
+        float, Quantity("power", "0 W", "1000 MW", "no single plant does more", above_low=True)
     ] = _key("cooling", "Cooling the plant has to deliver.")
     T_evap_K: Annotated[float, _Temperature] = _key("evaporating", "Evaporating temperature today.")
-    T_cond_K: Annotated[float, _Temperature] = _key("condensing", "Condensing temperature today.")
+    T_cond_K: Annotated[float, replace(_Temperature, example="42 degC")] = _key(
+        "condensing", "Condensing temperature today."
+    )
     reading: Annotated[
         str, _Convention, WhyDefault("a gauge on a suction or discharge line is read against the dew line")
     ] = _key("reading", "What these two temperatures are.", "dew")
@@ -120,7 +124,8 @@ class Compressor(Table):
         float, _Efficiency, WhyDefault("an ordinary value, the same for every refrigerant")
     ] = _key("volumetric_efficiency", "Volume drawn in over swept volume.", "0.90")
     swept_volume_m3_per_s: Annotated[
-        float | None, Quantity("volume flow", "0 m3/h", "1000000 m3/h", "a compressor sweeps a volume", True)
+        float | None,
+        Quantity("volume flow", "0 m3/h", "1000000 m3/h", "no single plant has more", above_low=True),
     ] = _key("swept_volume", "Swept volume of all compressors at the speed they run.", None)
 
 

@@ -19,11 +19,12 @@ from pydantic_core import ErrorDetails
 
 from retrofit.case.model import MOST_CANDIDATES, TABLES, Case, CaseFile, Default, Table, WhyDefault
 from retrofit.case.positions import key_lines
-from retrofit.errors import CaseFileError, Problem, QuantityError, UnknownRefrigerantError
-from retrofit.refrigerants import find
+from retrofit.case.values import FileValue, designation_of
+from retrofit.errors import CaseFileError, Problem, QuantityError
 from retrofit.units import close_to, described, listed, parse_quantity, quoted, shown
 
 LARGEST_FILE_BYTES = 1_000_000
+LONGEST_GIVEN = 1000  # characters
 
 _Where = tuple[str | int, ...]
 
@@ -71,9 +72,9 @@ def _given(data: Mapping[str, Any], table: str = "") -> Iterator[tuple[str, str]
         if isinstance(value, dict):
             yield from _given(value, f"{key}.")
         elif isinstance(value, list):
-            yield table + key, ", ".join(str(item) for item in value)
+            yield table + key, ", ".join(shown(str(item)) for item in value)
         else:
-            yield table + key, str(value)
+            yield table + key, shown(str(value), LONGEST_GIVEN)
 
 
 def _defaults(model: CaseFile) -> Iterator[Default]:
@@ -208,14 +209,12 @@ def _missing(where: _Where) -> str:
 
 
 def _sample(where: _Where) -> str:
-    samples = {
-        "refrigerant": "R404A",
-        "cooling": "120 kW",
-        "evaporating": "-8 degC",
-        "condensing": "42 degC",
-    }
-    sample = samples.get(str(where[-1]))
-    return f', as in {where[-1]} = "{sample}"' if sample else ', as in candidates = ["R448A", "R449A"]'
+    table = TABLES[str(where[0])]
+    field = next(field for field in table.model_fields.values() if field.alias == where[-1])
+    value = next((extra for extra in field.metadata if isinstance(extra, FileValue)), None)
+    if value is None:
+        return ', as in candidates = ["R448A", "R449A"]'
+    return f', as in {where[-1]} = "{value.json_schema()["examples"][0]}"'
 
 
 def _unknown_key(where: _Where, value: object) -> str:
@@ -288,6 +287,6 @@ def _designation(value: object) -> str | None:
     if not isinstance(value, str):
         return None
     try:
-        return find(value).designation
-    except UnknownRefrigerantError:
+        return designation_of(value)
+    except QuantityError:
         return None

@@ -18,5 +18,20 @@ def case_schema() -> dict[str, Any]:
     Source: JSON Schema, draft 2020-12.
     """
     schema = CaseFile.model_json_schema(by_alias=True)
-    schema["title"] = "Refrigerant changeover case"
-    return {"$schema": "https://json-schema.org/draft/2020-12/schema", **schema}
+    head = {
+        "$schema": "https://json-schema.org/draft/2020-12/schema",
+        "title": "Refrigerant changeover case",
+    }
+    return {**head, **_without_noise(schema)}
+
+
+def _without_noise(node: Any) -> Any:
+    """Drop what pydantic adds and no editor needs: titles made from names, and defaults of nothing."""
+    if isinstance(node, list):
+        return [_without_noise(item) for item in node]
+    if not isinstance(node, dict):
+        return node
+    noise = {"default"} if node.get("default", "") is None else set()
+    if isinstance(node.get("title"), str):
+        noise.add("title")
+    return {key: _without_noise(value) for key, value in node.items() if key not in noise}

@@ -28,16 +28,22 @@ from retrofit.units import (
     standard_atmosphere_Pa,
 )
 
+LONGEST_DESIGNATION = 40  # characters
+_DIRECTION_MARKS = "\u061c\u200e\u200f\u202a\u202b\u202c\u202d\u202e\u2066\u2067\u2068\u2069"
 _NUMBER_PATTERN = r"^\s*[+\u2212-]?([0-9]+\.?[0-9]*|\.[0-9]+)([eE][+-]?[0-9]+)?\s*"
 
 
-class _Value:
+class FileValue:
     """What all kinds of value share: pydantic asks them how to read and how to describe."""
 
+    example = ""
+
     def read(self, value: object, info: ValidationInfo) -> Any:
+        """Return the value as the model holds it; raises QuantityError with the complaint."""
         raise NotImplementedError
 
     def json_schema(self) -> dict[str, Any]:
+        """Return the JSON Schema of the value as the file holds it."""
         raise NotImplementedError
 
     def __get_pydantic_core_schema__(self, source: Any, handler: GetCoreSchemaHandler) -> CoreSchema:
@@ -50,7 +56,7 @@ class _Value:
 
 
 @dataclass(frozen=True)
-class Quantity(_Value):
+class Quantity(FileValue):
     """A text with a unit of one kind, within a range that is itself written with units."""
 
     kind: str
@@ -61,6 +67,7 @@ class Quantity(_Value):
     example: str = ""
 
     def read(self, value: object, info: ValidationInfo) -> float:
+        """Return the value in SI."""
         found = parse_quantity(value, self.kind)
         low, high = parse_quantity(self.low, self.kind), parse_quantity(self.high, self.kind)
         if found < low or found > high or (self.above_low and found == low):
@@ -68,6 +75,7 @@ class Quantity(_Value):
         return found
 
     def json_schema(self) -> dict[str, Any]:
+        """Return the pattern of the text; a fraction may also be a number."""
         example = self.example or KINDS[self.kind].example
         text = {"type": "string", "pattern": unit_pattern(self.kind), "examples": [example]}
         if self.kind != "fraction":
@@ -76,7 +84,7 @@ class Quantity(_Value):
 
 
 @dataclass(frozen=True)
-class PressureLimit(_Value):
+class PressureLimit(FileValue):
     """A pressure that says absolute or gauge; a gauge one counts from the air at the plant's altitude."""
 
     low: str
@@ -84,6 +92,7 @@ class PressureLimit(_Value):
     reason: str
 
     def read(self, value: object, info: ValidationInfo) -> float:
+        """Return the absolute pressure in Pa; needs the altitude, read before it."""
         p_ambient_Pa = standard_atmosphere_Pa(info.data.get("altitude_m", 0.0))
         p_Pa = parse_pressure(value).absolute_Pa(p_ambient_Pa)
         if not parse_pressure(self.low).value_Pa <= p_Pa <= parse_pressure(self.high).value_Pa:
@@ -91,18 +100,20 @@ class PressureLimit(_Value):
         return p_Pa
 
     def json_schema(self) -> dict[str, Any]:
+        """Return the pattern of the text."""
         example = KINDS["pressure"].example
         return {"type": "string", "pattern": unit_pattern("pressure"), "examples": [example]}
 
 
 @dataclass(frozen=True)
-class Choice(_Value):
+class Choice(FileValue):
     """One word, or a few, out of a closed list."""
 
     words: tuple[str, ...]
     hints: tuple[tuple[str, str], ...] = ()  # what people write instead, and the word for it
 
     def read(self, value: object, info: ValidationInfo) -> str:
+        """Return the word."""
         allowed = listed(f'"{word}"' for word in self.words)
         if not isinstance(value, str):
             raise QuantityError(f"{described(value)} stands where a word is needed; write {allowed}")
@@ -115,74 +126,98 @@ class Choice(_Value):
         return f', did you mean "{hint}"?' if hint else close_to(value, self.words)
 
     def json_schema(self) -> dict[str, Any]:
+        """Return the list of words."""
         return {"enum": list(self.words)}
 
 
 @dataclass(frozen=True)
-class Refrigerant(_Value):
+class Refrigerant(FileValue):
     """The designation of a refrigerant of the catalogue, brought to its normal spelling."""
 
+    example: str = "R404A"
+
     def read(self, value: object, info: ValidationInfo) -> str:
+        """Return the designation in its normal spelling."""
         if not isinstance(value, str):
-            wanted = 'a refrigerant is needed; write its designation, as in "R134a"'
+            wanted = f'a refrigerant is needed; write its designation, as in "{self.example}"'
             raise QuantityError(f"{described(value)} stands where {wanted}")
-        try:
-            return find(value).designation
-        except UnknownRefrigerantError as unknown:
-            raise QuantityError(_not_in_catalogue(value, unknown.close)) from None
+        return designation_of(value)
 
     def json_schema(self) -> dict[str, Any]:
-        return {"type": "string", "pattern": r"^\s*[Rr].+$", "examples": list(designations())}
+        """Return the pattern of every designation of the catalogue, and the list as examples."""
+        return {"type": "string", "pattern": _designation_pattern(), "examples": list(designations())}
 
 
 @dataclass(frozen=True)
-class Text(_Value):
+class Text(FileValue):
     """A title or a sentence: bounded, on one line once read, without control characters."""
 
     longest: int
 
     def read(self, value: object, info: ValidationInfo) -> str:
+        """Return the text with every run of blanks and line ends as one blank."""
         if not isinstance(value, str):
-            raise QuantityError(
-                f"{described(value)} stands where a text is needed; write it in quotation marks"
-            )
-        text = " ".join(value.split())
-        odd = next((c for c in text if is_hidden(c)), None)
-        if odd is not None:
-            raise QuantityError(f"it holds the hidden character {shown(odd)}; write plain text")
+            raise QuantityError(f"{described(value)} stands where a text is needed; write it in quotes")
+        text = re.sub(r"[ \t\r\n]+", " ", value).strip(" ")
+        hidden = next((character for character in text if is_hidden(character)), None)
+        if hidden is not None:
+            raise QuantityError(f"it holds the hidden character {shown(hidden)}; write plain text")
         if not 0 < len(text) <= self.longest:
             raise QuantityError(f"it has {len(text)} characters; allowed are 1 to {self.longest}")
         return text
 
     def json_schema(self) -> dict[str, Any]:
-        return {"type": "string", "minLength": 1, "maxLength": self.longest}
+        """Return the least length; the longest counts only after blanks are joined."""
+        return {"type": "string", "minLength": 1}
 
 
 def is_hidden(character: str) -> bool:
     """Say whether a character commands a terminal or turns the direction of writing."""
-    turns = "\u061c\u200e\u200f\u202a\u202b\u202c\u202d\u202e\u2066\u2067\u2068\u2069"
-    return unicodedata.category(character) in ("Cc", "Cs") or character in turns
+    return unicodedata.category(character) in ("Cc", "Cs") or character in _DIRECTION_MARKS
+
+
+def designation_of(name: str) -> str:
+    """Return the normal spelling of a refrigerant's designation.
+
+    Args:
+        name: What a user wrote, such as "r-404a". [-]
+    Returns: The designation as the catalogue has it, such as "R404A". [-]
+    Raises: QuantityError if the catalogue has none of that name; it holds the close ones.
+    """
+    if len(name) > LONGEST_DESIGNATION or not name.isprintable():
+        raise QuantityError(f'{quoted(name)} is no designation of a refrigerant; write it as in "R404A"')
+    try:
+        return find(name).designation
+    except UnknownRefrigerantError as unknown:
+        near = listed(f'"{close}"' for close in unknown.close) if unknown.close else ""
+    meant = f", did you mean {near}?" if near else ""
+    raise QuantityError(
+        f"{quoted(name)} is not in the catalogue{meant}; the command `retrofit refrigerants` lists what is"
+    )
 
 
 def unit_pattern(kind: str) -> str:
-    """Return a regular expression (ECMA 262) of the texts that are quantities of a kind in form."""
-    units = listed_alternatives(KINDS[kind].units)
+    """Return a regular expression (ECMA 262) of the texts that have the form of a kind of quantity."""
+    units = "|".join(_spellings(unit) for unit in KINDS[kind].units)
     return rf"{_NUMBER_PATTERN}({units})\s*$"
 
 
-def listed_alternatives(units: Any) -> str:
-    """Return unit spellings as alternatives, with the blanks and signs that reading accepts."""
-    return "|".join(
-        r"\s*".join(re.escape(c) for c in unit).replace("d\\s*e\\s*g", "(deg|°)").replace("3", "[3³]")
-        for unit in units
+def _spellings(unit: str) -> str:
+    """Return a pattern of one unit with the blanks and signs that reading accepts."""
+    parts = re.findall(r"deg|[A-Za-z]+?(?=[ag]$)|[A-Za-z]+|[0-9]|.", unit)
+    allowed = {"deg": "(deg|°)", "3": "[3³]", "a": r"\(?a\)?", "g": r"\(?g\)?"}
+    return r"\s*".join(allowed.get(part, re.escape(part)) for part in parts)
+
+
+def _designation_pattern() -> str:
+    """Return a pattern of every designation, with or without R and hyphen, in any capitals."""
+    either_case = (
+        "".join(f"[{c.upper()}{c.lower()}]" if c.isalpha() else re.escape(c) for c in name[1:])
+        for name in designations()
     )
+    return rf"^\s*[Rr]?[\s-]*({'|'.join(either_case)})\s*$"
 
 
 def _outside(value: object, low: str, high: str, reason: str, above_low: bool = False) -> str:
     start = f"above {low} and up to {high}" if above_low else f"{low} to {high}"
     return f"{quoted(str(value))} is outside what is allowed: {start} ({reason})"
-
-
-def _not_in_catalogue(value: str, close: tuple[str, ...]) -> str:
-    meant = f", did you mean {listed(close)}?" if close else ""
-    return f"{quoted(value)} is not in the catalogue{meant}; `retrofit refrigerants` lists every designation"

@@ -96,7 +96,7 @@ def _number_and_unit(value: object, kind: Kind) -> tuple[float, str]:
 def _split(text: str, kind: Kind) -> tuple[float, str]:
     body = _BLANKS.sub(" ", text).strip(" ")
     match = _NUMBER.match(body)
-    if len(text) > LONGEST_QUANTITY or match is None:
+    if len(body) > LONGEST_QUANTITY or match is None:
         raise QuantityError(f"{quoted(text)} {_why_no_number(body)}; {kind.how}")
     rest = body[match.end() :].lstrip(" ")
     complaint = _why_not_all(rest, body[match.end() :])

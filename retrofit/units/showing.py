@@ -48,14 +48,14 @@ class Display:
     significant: int = 3
 
     def decimals_for(self, values: Iterable[float | None]) -> int:
-        """Return one number of decimals that serves all these values, given in SI."""
+        """Return one number of decimals for all these SI values: the smallest keeps two digits at least."""
         kept = [value for value in values if value is not None and math.isfinite(value)]
-        numbers = [abs(self.unit.from_SI(value)) for value in kept]
-        smallest = min((number for number in numbers if number > 0.0), default=1.0)
-        if not self.significant:
+        sizes = [size for size in (abs(self.unit.from_SI(value)) for value in kept) if size > 0.0]
+        if not self.significant or not sizes:
             return self.decimals
-        needed = self.significant - 1 - math.floor(math.log10(smallest))
-        return max(self.decimals, min(needed, MOST_DECIMALS))
+        for_largest = self.significant - 1 - math.floor(math.log10(max(sizes)))
+        for_smallest = 1 - math.floor(math.log10(min(sizes)))
+        return min(max(self.decimals, for_largest, for_smallest), MOST_DECIMALS)
 
 
 @dataclass(frozen=True)
