@@ -128,7 +128,7 @@ def _whole_file(name: str, message: str) -> CaseFileError:
 
 # Text to TOML
 
-_PLACE = re.compile(r" \(at line ([0-9]+), column [0-9]+\)$")
+_PLACE = re.compile(r" \(at (?:line ([0-9]+), column [0-9]+|end of document)\)$")
 _PLAIN_WORDS = {
     "Invalid value": 'the value cannot be read; text stands in double quotes, as in cooling = "120 kW"',
     "Expected '='": 'an equals sign is missing; a line reads key = "value", a table begins with [name]',
@@ -136,6 +136,9 @@ _PLAIN_WORDS = {
     "Cannot overwrite a value": "the same key is given twice; keep one of them",
     "Cannot declare": "the same table is given twice; put its keys under one heading",
     "Cannot mutate": "the same table is given twice; put its keys under one heading",
+    "Expected ']'": "a table begins with its name in brackets, as in [duty]",
+    "Invalid initial character": 'a line reads key = "value", a table begins with [name], a remark with #',
+    "Invalid date": 'text stands in double quotes, as in cooling = "120 kW"',
     "Expected newline": "something is left over after the value; one line holds one key",
     "Unclosed array": "a list is not closed; it ends with ]",
     "Unterminated string": "a text is not closed; it ends with the quotation mark it began with",
@@ -157,11 +160,10 @@ def _parsed(text: str, name: str) -> tuple[dict[str, Any], dict[_Where, int]]:
 
 def _syntax_problem(message: str, text: str) -> Problem:
     place = _PLACE.search(message)
-    line = int(place.group(1)) if place else text.count("\n") + 1
+    line = int(place.group(1)) if place and place.group(1) else text.count("\n") + 1
     reason = message[: place.start()] if place else message
-    plain = next((words for start, words in _PLAIN_WORDS.items() if reason.startswith(start)), "")
-    detail = shown(reason, 120)
-    return Problem(line, "", f"not valid TOML: {plain} ({detail})" if plain else f"not valid TOML: {detail}")
+    plain = next((words for start, words in _PLAIN_WORDS.items() if reason.startswith(start)), None)
+    return Problem(line, "", f"not valid TOML: {plain or shown(reason, 120)}")
 
 
 # TOML to model
@@ -214,20 +216,22 @@ def _sample(where: _Where) -> str:
     value = next((extra for extra in field.metadata if isinstance(extra, FileValue)), None)
     if value is None:
         return ', as in candidates = ["R448A", "R449A"]'
-    return f', as in {where[-1]} = "{value.json_schema()["examples"][0]}"'
+    return f', as in {where[-1]} = "{value.sample()}"'
 
 
 def _unknown_key(where: _Where, value: object) -> str:
-    key = str(where[-1])
-    table: type[Table] = TABLES[str(where[0])] if len(where) > 1 else CaseFile
-    known = _keys(table)
-    home = next((name for name, other in TABLES.items() if key in _keys(other)), None)
-    place = f"[{where[0]}]" if len(where) > 1 else "the top of the file"
-    thing = "table" if isinstance(value, dict) else "key"
+    key, is_top = str(where[-1]), len(where) == 1
+    home = next((f"in [{name}]" for name, other in TABLES.items() if key in _keys(other)), None)
+    if key in _keys(CaseFile):
+        home = f"in a table of its own, [{key}]" if key in TABLES else "at the top of the file, above [plant]"
+    place = "at the top of the file" if is_top else f"in [{where[0]}]"
     if home is not None:
-        return f"{key} does not belong to {place}; move it to [{home}]"
-    meant = close_to(key, known)
-    return f"there is no {thing} {quoted(key)} in {place}{meant}; known are {listed(known, 'and')}"
+        return f"{key} belongs {home}, not {place}; move it there"
+    known = _keys(CaseFile if is_top else TABLES[str(where[0])])
+    thing = "table" if isinstance(value, dict) else "key"
+    return (
+        f"there is no {thing} {quoted(key)} {place}{close_to(key, known)}; known are {listed(known, 'and')}"
+    )
 
 
 def _keys(table: type[Table]) -> list[str]:

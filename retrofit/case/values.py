@@ -36,7 +36,9 @@ _NUMBER_PATTERN = r"^\s*[+\u2212-]?([0-9]+\.?[0-9]*|\.[0-9]+)([eE][+-]?[0-9]+)?\
 class FileValue:
     """What all kinds of value share: pydantic asks them how to read and how to describe."""
 
-    example = ""
+    def sample(self) -> str:
+        """Return a value as a user could write it, or nothing."""
+        return ""
 
     def read(self, value: object, info: ValidationInfo) -> Any:
         """Return the value as the model holds it; raises QuantityError with the complaint."""
@@ -66,6 +68,10 @@ class Quantity(FileValue):
     above_low: bool = False  # the lower end itself is not allowed
     example: str = ""
 
+    def sample(self) -> str:
+        """Return a quantity of this kind, as text."""
+        return self.example or KINDS[self.kind].example
+
     def read(self, value: object, info: ValidationInfo) -> float:
         """Return the value in SI."""
         found = parse_quantity(value, self.kind)
@@ -76,8 +82,7 @@ class Quantity(FileValue):
 
     def json_schema(self) -> dict[str, Any]:
         """Return the pattern of the text; a fraction may also be a number."""
-        example = self.example or KINDS[self.kind].example
-        text = {"type": "string", "pattern": unit_pattern(self.kind), "examples": [example]}
+        text = {"type": "string", "pattern": unit_pattern(self.kind), "examples": [self.sample()]}
         if self.kind != "fraction":
             return text
         return {"anyOf": [{"type": "number", "minimum": 0, "maximum": 1}, text]}
@@ -134,12 +139,14 @@ class Choice(FileValue):
 class Refrigerant(FileValue):
     """The designation of a refrigerant of the catalogue, brought to its normal spelling."""
 
-    example: str = "R404A"
+    def sample(self) -> str:
+        """Return a designation."""
+        return "R404A"
 
     def read(self, value: object, info: ValidationInfo) -> str:
         """Return the designation in its normal spelling."""
         if not isinstance(value, str):
-            wanted = f'a refrigerant is needed; write its designation, as in "{self.example}"'
+            wanted = f'a refrigerant is needed; write its designation, as in "{self.sample()}"'
             raise QuantityError(f"{described(value)} stands where {wanted}")
         return designation_of(value)
 

@@ -14,7 +14,7 @@ LONGEST_QUANTITY = 60  # characters; a longer text is no quantity
 LARGEST_BARE_NUMBER = 1e15
 
 # Written by people who mean a difference: a point on a scale.
-_SCALE_POINTS = frozenset({"degC", "degF", "C", "F"})
+_SCALE_POINTS = frozenset({"degc", "degf", "c", "f"})
 
 _BLANKS = re.compile(r"[ \t\u00a0\u2009\u202f]+")  # line ends and controls are not blanks
 _NUMBER = re.compile(r"([+\u2212-]?)([0-9]+\.?[0-9]*|\.[0-9]+)([eE][+-]?[0-9]+)?")
@@ -36,7 +36,7 @@ def parse_quantity(value: object, kind: str) -> float:
     if kind == "pressure":
         raise ValueError("a pressure is absolute or gauge: use parse_pressure")
     number, unit = _number_and_unit(value, KINDS[kind])
-    if kind == "temperature difference" and unit in _SCALE_POINTS:
+    if kind == "temperature difference" and unit.lower() in _SCALE_POINTS:
         raise QuantityError(_point_for_difference(str(value), number, unit))
     return _converted(str(value), number, _unit_of(str(value), unit, KINDS[kind]))
 
@@ -157,7 +157,7 @@ def _converted(text: str, number: float, unit: Unit) -> float:
 
 
 def _point_for_difference(text: str, number: float, unit: str) -> str:
-    sign, scale = ("R", "Fahrenheit") if unit.endswith("F") else ("K", "Celsius")
+    sign, scale = ("R", "Fahrenheit") if unit.lower().endswith("f") else ("K", "Celsius")
     return (
         f"{quoted(text)} is a point on a temperature scale, but a difference is needed; "
         f'write "{number:g} {sign}" for a difference of {number:g} {scale} degrees'
