@@ -11,7 +11,7 @@ import re
 import tomllib
 from bisect import bisect_right
 
-Path = tuple[str | int, ...]
+KeyPath = tuple[str | int, ...]
 
 _GAP = re.compile(r"(?:[ \t\n]|#[^\n]*)*")
 _KEY = re.compile(r'"[^"\\\n]*(?:\\.[^"\\\n]*)*"|\'[^\'\n]*\'|[A-Za-z0-9_-]+')
@@ -27,7 +27,7 @@ _STRING = re.compile(
 _BARE = re.compile(r"[^,\]}#\n]+")
 
 
-def key_lines(text: str) -> dict[Path, int]:
+def key_lines(text: str) -> dict[KeyPath, int]:
     """Return the line on which each key, table and array item of a TOML text stands.
 
     Args:
@@ -45,11 +45,11 @@ class _Scanner:
         self.text = text
         self.at = 0
         self.starts = [0, *(match.end() for match in re.finditer("\n", text))]
-        self.lines: dict[Path, int] = {(): 1}
-        self.items: dict[Path, int] = {}  # length so far of each array of tables
+        self.lines: dict[KeyPath, int] = {(): 1}
+        self.items: dict[KeyPath, int] = {}  # length so far of each array of tables
 
     def scan(self) -> None:
-        table: Path = ()
+        table: KeyPath = ()
         while self.skip_gap():
             if self.text[self.at] == "[":
                 table = self.header()
@@ -72,7 +72,7 @@ class _Scanner:
     def line(self, position: int) -> int:
         return bisect_right(self.starts, position)
 
-    def note(self, path: Path, position: int) -> None:
+    def note(self, path: KeyPath, position: int) -> None:
         """Keep the line of a path's first appearance."""
         self.lines.setdefault(path, self.line(position))
 
@@ -82,7 +82,7 @@ class _Scanner:
             return str(tomllib.loads(f"key = {raw}")["key"])
         return raw[1:-1] if raw[:1] in ("'", '"') else raw
 
-    def header(self) -> Path:
+    def header(self) -> KeyPath:
         """Read `[table]` or `[[array of tables]]` and return the path it opens."""
         is_array = self.text.startswith("[[", self.at)
         line = self.line(self.at)
@@ -95,7 +95,7 @@ class _Scanner:
         self.lines[path] = line
         return path
 
-    def dotted(self, path: Path) -> Path:
+    def dotted(self, path: KeyPath) -> KeyPath:
         """Read a dotted key below a path, noting every part, and return the path it names."""
         self.step(_BLANKS)
         while True:
@@ -107,12 +107,12 @@ class _Scanner:
             if path in self.items:
                 path = (*path, self.items[path] - 1)
 
-    def key_and_value(self, table: Path) -> None:
+    def key_and_value(self, table: KeyPath) -> None:
         path = self.dotted(table)
         self.at = self.text.index("=", self.at) + 1
         self.value(path)
 
-    def value(self, path: Path) -> None:
+    def value(self, path: KeyPath) -> None:
         """Step over a value, noting the keys and items inside it."""
         self.skip_gap()
         opening = self.text[self.at]
@@ -125,7 +125,7 @@ class _Scanner:
         else:
             self.step(_BARE)
 
-    def array(self, path: Path) -> None:
+    def array(self, path: KeyPath) -> None:
         self.at += 1
         index = 0
         while self.skip_gap() and self.text[self.at] != "]":
@@ -135,7 +135,7 @@ class _Scanner:
             self.skip_separator()
         self.at += 1
 
-    def inline_table(self, path: Path) -> None:
+    def inline_table(self, path: KeyPath) -> None:
         self.at += 1
         while self.skip_gap() and self.text[self.at] != "}":
             self.key_and_value(path)

@@ -1,15 +1,12 @@
 """Read a case file, or say everything that is wrong with it at once.
 
-The bytes become text, the text TOML, the TOML a model. A fault in an early step hides the later ones;
-within the model every fault is found. Each carries the line of its key.
+The bytes become text, the text TOML (`retrofit.case.source`), the TOML a model (here). A fault in an
+early step hides the later ones; within the model every fault is found. Each carries the line of its key.
 """
 
 from __future__ import annotations
 
 import os
-import re
-import stat
-import tomllib
 from collections.abc import Iterator, Mapping, Sequence
 from pathlib import Path
 from typing import Any
@@ -18,15 +15,13 @@ from pydantic import ValidationError
 from pydantic_core import ErrorDetails
 
 from retrofit.case.model import MOST_CANDIDATES, TABLES, Case, CaseFile, Default, Table, WhyDefault
-from retrofit.case.positions import key_lines
+from retrofit.case.positions import KeyPath
+from retrofit.case.source import parsed, text_of
 from retrofit.case.values import FileValue, designation_of
 from retrofit.errors import CaseFileError, Problem, QuantityError
 from retrofit.units import close_to, described, listed, parse_quantity, quoted, shown
 
-LARGEST_FILE_BYTES = 1_000_000
 LONGEST_GIVEN = 1000  # characters
-
-_Where = tuple[str | int, ...]
 
 
 def read_case(path: str | os.PathLike[str]) -> Case:
@@ -38,8 +33,8 @@ def read_case(path: str | os.PathLike[str]) -> Case:
     Raises: CaseFileError with every problem found and its line; nothing else for any file.
     """
     name = shown(os.fspath(path), 200)
-    text = _text_of(os.fspath(path), name)
-    data, lines = _parsed(text, name)
+    text = text_of(os.fspath(path), name)
+    data, lines = parsed(text, name)
     problems = list(_problems_between_keys(data))
     try:
         model = CaseFile.model_validate(data)
@@ -86,94 +81,14 @@ def _defaults(model: CaseFile) -> Iterator[Default]:
                 yield Default(f"{name}.{field.alias}", str(field.default), why)
 
 
-# Bytes to text
-
-
-def _text_of(path: str, name: str) -> str:
-    try:
-        raw = _bytes_of(path, name)
-    except FileNotFoundError:
-        raise _whole_file(
-            name, "there is no such file; check the path, or start one with `retrofit new`"
-        ) from None
-    except PermissionError:
-        raise _whole_file(name, "it may not be read; check its permissions") from None
-    except (OSError, ValueError) as error:
-        reason = error.strerror if isinstance(error, OSError) else str(error)
-        raise _whole_file(name, f"it cannot be read ({shown(str(reason))}); check the path") from None
-    try:
-        return raw.decode("utf-8-sig")
-    except UnicodeDecodeError as error:
-        line = raw.count(b"\n", 0, error.start) + 1
-        message = "this is not text in UTF-8; save the file as plain text in UTF-8 from a text editor"
-        raise CaseFileError(name, [Problem(line, "", message)]) from None
-
-
-def _bytes_of(path: str, name: str) -> bytes:
-    mode = os.stat(path).st_mode
-    if stat.S_ISDIR(mode):
-        raise _whole_file(name, "this is a folder; name the case file in it")
-    if not stat.S_ISREG(mode):
-        raise _whole_file(name, "this is not an ordinary file; name a case file")
-    with open(path, "rb") as file:
-        raw = file.read(LARGEST_FILE_BYTES + 1)
-    if len(raw) > LARGEST_FILE_BYTES:
-        raise _whole_file(name, "the file is larger than 1 MB; a case file has some dozens of lines")
-    return raw
-
-
-def _whole_file(name: str, message: str) -> CaseFileError:
-    return CaseFileError(name, [Problem(0, "", message)])
-
-
-# Text to TOML
-
-_PLACE = re.compile(r" \(at (?:line ([0-9]+), column [0-9]+|end of document)\)$")
-_PLAIN_WORDS = {
-    "Invalid value": 'the value cannot be read; text stands in double quotes, as in cooling = "120 kW"',
-    "Expected '='": 'an equals sign is missing; a line reads key = "value", a table begins with [name]',
-    "Invalid statement": 'a line reads key = "value", a table begins with [name], a remark with #',
-    "Cannot overwrite a value": "the same key is given twice; keep one of them",
-    "Cannot declare": "the same table is given twice; put its keys under one heading",
-    "Cannot mutate": "the same table is given twice; put its keys under one heading",
-    "Expected ']'": "a table begins with its name in brackets, as in [duty]",
-    "Invalid initial character": 'a line reads key = "value", a table begins with [name], a remark with #',
-    "Invalid date": 'text stands in double quotes, as in cooling = "120 kW"',
-    "Expected newline": "something is left over after the value; one line holds one key",
-    "Unclosed array": "a list is not closed; it ends with ]",
-    "Unterminated string": "a text is not closed; it ends with the quotation mark it began with",
-    "Illegal character": "a character is not allowed here; a text ends on its line, in double quotes",
-    "Duplicate inline table key": "the same key is given twice; keep one of them",
-}
-
-
-def _parsed(text: str, name: str) -> tuple[dict[str, Any], dict[_Where, int]]:
-    try:
-        return tomllib.loads(text), key_lines(text)
-    except tomllib.TOMLDecodeError as error:
-        raise CaseFileError(name, [_syntax_problem(str(error), text)]) from None
-    except RecursionError:
-        raise _whole_file(name, "values are nested too deeply; a case has tables and single values") from None
-    except ValueError:
-        raise _whole_file(name, "a number has too many digits; write numbers of ordinary size") from None
-
-
-def _syntax_problem(message: str, text: str) -> Problem:
-    place = _PLACE.search(message)
-    line = int(place.group(1)) if place and place.group(1) else text.count("\n") + 1
-    reason = message[: place.start()] if place else message
-    plain = next((words for start, words in _PLAIN_WORDS.items() if reason.startswith(start)), None)
-    return Problem(line, "", f"not valid TOML: {plain or shown(reason, 120)}")
-
-
 # TOML to model
 
 
-def _where(detail: ErrorDetails) -> _Where:
+def _where(detail: ErrorDetails) -> KeyPath:
     return tuple(detail["loc"])
 
 
-def _located(where: _Where, text: str, lines: Mapping[_Where, int]) -> Problem:
+def _located(where: KeyPath, text: str, lines: Mapping[KeyPath, int]) -> Problem:
     """Give a problem the line of its key, or of the nearest table around it that is there."""
     for length in range(len(where), 0, -1):
         if where[:length] in lines:
@@ -181,7 +96,7 @@ def _located(where: _Where, text: str, lines: Mapping[_Where, int]) -> Problem:
     return Problem(0, _written(where), text)
 
 
-def _written(where: _Where) -> str:
+def _written(where: KeyPath) -> str:
     """Return a path as a user counts: `compare.candidates[1]` is the first."""
     parts = [f"[{part + 1}]" if isinstance(part, int) else f".{shown(part)}" for part in where]
     return "".join(parts).removeprefix(".")
@@ -201,7 +116,7 @@ def _complaint(detail: ErrorDetails, data: Mapping[str, Any]) -> str:
     return _not_candidates(detail["input"])
 
 
-def _missing(where: _Where) -> str:
+def _missing(where: KeyPath) -> str:
     if len(where) > 1:
         return f"is missing; add {where[-1]} to [{where[0]}]{_sample(where)}"
     needed = [
@@ -210,7 +125,7 @@ def _missing(where: _Where) -> str:
     return f"the table [{where[0]}] is missing; add it with {listed(needed, 'and')}"
 
 
-def _sample(where: _Where) -> str:
+def _sample(where: KeyPath) -> str:
     table = TABLES[str(where[0])]
     field = next(field for field in table.model_fields.values() if field.alias == where[-1])
     value = next((extra for extra in field.metadata if isinstance(extra, FileValue)), None)
@@ -219,7 +134,7 @@ def _sample(where: _Where) -> str:
     return f', as in {where[-1]} = "{value.sample()}"'
 
 
-def _unknown_key(where: _Where, value: object) -> str:
+def _unknown_key(where: KeyPath, value: object) -> str:
     key, is_top = str(where[-1]), len(where) == 1
     home = next((f"in [{name}]" for name, other in TABLES.items() if key in _keys(other)), None)
     if key in _keys(CaseFile):
@@ -248,7 +163,7 @@ def _not_candidates(value: object) -> str:
 # What one key says against another
 
 
-def _problems_between_keys(data: Mapping[str, Any]) -> Iterator[tuple[_Where, str]]:
+def _problems_between_keys(data: Mapping[str, Any]) -> Iterator[tuple[KeyPath, str]]:
     """Yield the faults that need two keys; keys that cannot be read by themselves are passed over."""
     duty, compare = data.get("duty"), data.get("compare")
     if isinstance(duty, dict):
@@ -259,7 +174,7 @@ def _problems_between_keys(data: Mapping[str, Any]) -> Iterator[tuple[_Where, st
         yield from _repeated(compare["candidates"], _designation(existing))
 
 
-def _evaporating_above_condensing(duty: Mapping[str, Any]) -> Iterator[tuple[_Where, str]]:
+def _evaporating_above_condensing(duty: Mapping[str, Any]) -> Iterator[tuple[KeyPath, str]]:
     try:
         T_evap_K = parse_quantity(duty.get("evaporating"), "temperature")
         T_cond_K = parse_quantity(duty.get("condensing"), "temperature")
@@ -270,7 +185,7 @@ def _evaporating_above_condensing(duty: Mapping[str, Any]) -> Iterator[tuple[_Wh
         yield ("duty", "evaporating"), f"{given}; the evaporating temperature lies below the condensing one"
 
 
-def _repeated(candidates: Sequence[object], existing: str | None) -> Iterator[tuple[_Where, str]]:
+def _repeated(candidates: Sequence[object], existing: str | None) -> Iterator[tuple[KeyPath, str]]:
     seen: set[str] = set()
     for index, item in enumerate(candidates):
         name = _designation(item)
