@@ -330,7 +330,7 @@ def test_formatting_keeps_the_value(number, decimals):
     """What is shown, read back, is the number within half a unit of its last decimal."""
     back = float(format_number(number, decimals).replace(THOUSANDS_MARK, "").replace(MINUS, "-"))
 
-    assert abs(back - number) <= 0.5 * 10.0**-decimals * (1 + 1e-9) + 1e-6 * (decimals > 5)
+    assert abs(back - number) <= 0.5 * 10.0**-decimals + 2.0 * math.ulp(number)
 
 
 @given(value=st.floats(1e-6, 1e9), kind=st.sampled_from(["cooling", "mass flow", "volume flow", "density"]))

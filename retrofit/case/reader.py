@@ -22,6 +22,7 @@ from retrofit.errors import CaseFileError, Problem, QuantityError
 from retrofit.units import close_to, described, listed, parse_quantity, quoted, shown
 
 LONGEST_GIVEN = 1000  # characters
+LONGEST_PATH = 4096  # characters
 
 
 def read_case(path: str | os.PathLike[str]) -> Case:
@@ -32,7 +33,7 @@ def read_case(path: str | os.PathLike[str]) -> Case:
     Returns: The case in SI, with what was written and every default taken.
     Raises: CaseFileError with every problem found and its line; nothing else for any file.
     """
-    name = shown(os.fspath(path), 200)
+    name = shown(os.fspath(path), LONGEST_PATH)
     text = text_of(os.fspath(path), name)
     data, lines = parsed(text, name)
     problems = list(_problems_between_keys(data))
@@ -40,7 +41,7 @@ def read_case(path: str | os.PathLike[str]) -> Case:
         model = CaseFile.model_validate(data)
     except ValidationError as error:
         found = error.errors(include_url=False)
-        problems += [(_where(detail), _complaint(detail, data)) for detail in found]
+        problems += [(_where(detail), _complaint(detail)) for detail in found]
         model = None
     if problems or model is None:
         raise CaseFileError(name, [_located(where, text, lines) for where, text in problems])
@@ -102,7 +103,7 @@ def _written(where: KeyPath) -> str:
     return "".join(parts).removeprefix(".")
 
 
-def _complaint(detail: ErrorDetails, data: Mapping[str, Any]) -> str:
+def _complaint(detail: ErrorDetails) -> str:
     """Return a fault that the model found in our own words."""
     kind, where = detail["type"], _where(detail)
     if kind == "value_error":

@@ -205,15 +205,21 @@ def designation_of(name: str) -> str:
 
 def unit_pattern(kind: str) -> str:
     """Return a regular expression (ECMA 262) of the texts that have the form of a kind of quantity."""
-    units = "|".join(_spellings(unit) for unit in KINDS[kind].units)
+    spell = _pressure_spellings if kind == "pressure" else _spellings
+    units = "|".join(spell(unit) for unit in KINDS[kind].units)
     return rf"{_NUMBER_PATTERN}({units})\s*$"
 
 
 def _spellings(unit: str) -> str:
     """Return a pattern of one unit with the blanks and signs that reading accepts."""
-    parts = re.findall(r"deg|[A-Za-z]+?(?=[ag]$)|[A-Za-z]+|[0-9]|.", unit)
-    allowed = {"deg": "(deg|°)", "3": "[3³]", "a": r"\(?a\)?", "g": r"\(?g\)?"}
+    parts = re.findall(r"deg|[A-Za-z]+|[0-9]|.", unit)
+    allowed = {"deg": "(deg|°)", "3": "[3³]"}
     return r"\s*".join(allowed.get(part, re.escape(part)) for part in parts)
+
+
+def _pressure_spellings(unit: str) -> str:
+    """Return a pattern of one unit of pressure: its mark may stand apart or in brackets."""
+    return rf"{unit[:-1]}\s*\(?{unit[-1]}\)?"
 
 
 def _designation_pattern() -> str:

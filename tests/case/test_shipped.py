@@ -1,15 +1,21 @@
 """The cases, the schema and the starting case that come with the project."""
 
+import math
+import re
 import tomllib
 from pathlib import Path
 
 import jsonschema
 import pytest
+from hypothesis import given
+from hypothesis import strategies as st
 
 from retrofit.case import SCHEMA_FILE, case_schema, new_case_text, read_case
 from retrofit.case.model import OILS, TABLES
+from retrofit.case.values import unit_pattern
+from retrofit.errors import QuantityError
 from retrofit.refrigerants import designations
-from retrofit.units import KINDS
+from retrofit.units import KINDS, parse_quantity
 
 CASES = sorted((Path(__file__).resolve().parents[2] / "cases").glob("*.toml"))
 
@@ -131,6 +137,24 @@ def test_the_schema_knows_every_refrigerant_and_unit(validator):
     for mark in ("bar g", "barg", "bar(g)", "psia", "psi a", "MPa g", "kPa a"):
         data["plant"]["high_side_limit"] = f"5 {mark}"
         validator.validate(data)
+
+
+@given(
+    kind=st.sampled_from([kind for kind in KINDS if kind != "pressure"]),
+    number=st.sampled_from(["5", "-8", "0.5", "1e3", ".5", "5.", "−1", "1,5", "1 000", ""]),
+    blank=st.sampled_from(["", " ", "  "]),
+    data=st.data(),
+)
+def test_the_schema_and_the_reader_agree_on_units(kind, number, blank, data):
+    """What matches the pattern of a kind is what the reader takes, in every kind of unit."""
+    unit = data.draw(st.sampled_from([unit for other in KINDS.values() for unit in other.units]))
+    text = number + blank + unit.replace("deg", data.draw(st.sampled_from(["deg", "°"])))
+    try:
+        is_read = math.isfinite(parse_quantity(text, kind))
+    except QuantityError:
+        is_read = False
+
+    assert bool(re.search(unit_pattern(kind), text)) == is_read
 
 
 def test_the_schema_describes_every_key():
