@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from functools import cache
+from typing import Any
 
 from retrofit.errors import NoModelError
 from retrofit.refrigerants import Refrigerant, find
@@ -85,8 +86,9 @@ def _estimate_pair(first: str, second: str) -> None:
     """Give the library ideal combining rules (Lorentz-Berthelot) for a pair it has no fit for."""
     from CoolProp import CoolProp
 
-    numbers = [CoolProp.get_fluid_param_string(name, "CAS") for name in (first, second)]
-    CoolProp.apply_simple_mixing_rule(*numbers, "Lorentz-Berthelot")
+    library: Any = CoolProp
+    numbers = [library.get_fluid_param_string(name, "CAS") for name in (first, second)]
+    library.apply_simple_mixing_rule(*numbers, "Lorentz-Berthelot")
 
 
 def provide_pairs(mixture: Mixture) -> tuple[tuple[str, str], ...]:

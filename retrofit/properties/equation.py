@@ -9,7 +9,7 @@ A step whose answer fails the checks is halved; a step that cannot be halved any
 from __future__ import annotations
 
 import math
-from collections.abc import Iterator, Sequence
+from collections.abc import Callable, Iterator, Sequence
 from dataclasses import dataclass
 from typing import Any
 
@@ -20,6 +20,7 @@ from retrofit.properties.components import Mixture, provide_pairs
 from retrofit.properties.grid import FloatArray
 
 START_TEMPERATURES_K = (240.0, 260.0, 225.0, 280.0, 210.0, 300.0, 195.0, 180.0, 165.0, 150.0, 130.0, 110.0)
+LOWEST_K = 100.0
 SMALLEST_STEP_K = 0.02
 FUGACITY_TOLERANCE = 1e-6
 # A wrong root misses the pressure expected from the steps before by far more; a right one by far less.
@@ -89,6 +90,8 @@ class EquationModel:
         estimated_pairs: Component pairs the library has no fit for, estimated here.
         molar_mass_kg_per_mol: Molar mass.
         T_limit_K: Highest temperature for which every component's equation of state is stated to hold.
+        T_floor_K: Lowest temperature of a pure fluid's equation; a blend is followed as far as it goes.
+        critical_point: Temperature and pressure, for a pure fluid; a blend's is not in the library.
     """
 
     def __init__(self, mixture: Mixture) -> None:
@@ -104,6 +107,8 @@ class EquationModel:
         self.z = np.array(self._state.get_mole_fractions())
         self.molar_mass_kg_per_mol = float(self._state.molar_mass())
         self.T_limit_K = min(pure.Tmax() for pure in self._pure)
+        self.T_floor_K = self._pure[0].Tmin() if mixture.is_pure else LOWEST_K
+        self.critical_point = (self._pure[0].T_critical(), self._pure[0].p_critical()) if mixture.is_pure else None
 
     def _new_state(self) -> Any:
         state = self._library.AbstractState("HEOS", "&".join(self.mixture.library_names))
@@ -118,7 +123,7 @@ class EquationModel:
         Returns: The bubble point at the first of the starting temperatures that passes every check.
         Raises: ModelFaultError if none does.
         """
-        for T in START_TEMPERATURES_K:
+        for T in (T for T in START_TEMPERATURES_K if T >= self.T_floor_K):
             try:
                 return self._checked(self._solve(T, 0.0, self._ideal_bubble(T)), None, None)
             except (ValueError, ModelFaultError):
@@ -265,50 +270,75 @@ class EquationModel:
 
     # -- single phase ----------------------------------------------------------------------------
 
-    def gas(self, p_Pa: float, T_K: float) -> PhaseState:
-        """Return the vapour state at a pressure and temperature, the phase imposed.
+    def gas(self, p_Pa: float, T_K: float, rho_guess: float | None = None) -> PhaseState:
+        """Return the vapour state at a pressure and temperature.
 
-        Raises: ModelFaultError if the library finds none.
+        Args:
+            p_Pa: Pressure. [Pa]
+            T_K: Temperature. [K]
+            rho_guess: Density to start from; the ideal gas if left out. [kg/m3]
+        Raises: ModelFaultError if there is none near the guess.
         """
-        return self._single_phase(self._library.iphase_gas, p_Pa, T_K)
+        ideal = p_Pa * self.molar_mass_kg_per_mol / (self._state.gas_constant() * T_K)
+        return self._single_phase(p_Pa, T_K, rho_guess or ideal, 0.9)
 
-    def liquid(self, p_Pa: float, T_K: float) -> PhaseState:
-        """Return the liquid state at a pressure and temperature, the phase imposed.
+    def liquid(self, p_Pa: float, T_K: float, rho_guess: float) -> PhaseState:
+        """Return the liquid state at a pressure and temperature, from a density near it.
 
-        Raises: ModelFaultError if the library finds none.
+        Args:
+            p_Pa: Pressure. [Pa]
+            T_K: Temperature. [K]
+            rho_guess: Density of a liquid near it, for example at the bubble point. [kg/m3]
+        Raises: ModelFaultError if there is none near the guess.
         """
-        return self._single_phase(self._library.iphase_liquid, p_Pa, T_K)
+        return self._single_phase(p_Pa, T_K, rho_guess, 1.1)
 
-    def _single_phase(self, phase: Any, p: float, T: float) -> PhaseState:
+    def _single_phase(self, p: float, T: float, rho_guess: float, way_out: float) -> PhaseState:
         state = self._state
-        self._impose(state, phase, p, T)
+        self._find_density(state, p, T, rho_guess / self.molar_mass_kg_per_mol, way_out)
         return PhaseState(T, state.hmass(), state.smass(), state.rhomass(), state.cpmass())
 
-    def _impose(self, state: Any, phase: Any, p: float, T: float) -> None:
-        state.specify_phase(phase)
-        try:
-            state.update(self._library.PT_INPUTS, p, T)
-        except ValueError as error:
-            raise ModelFaultError(
-                f"{self.mixture.designation}: no single-phase state at {p / 1e5:.4g} bar and {T:.2f} K: {error}"
-            ) from error
+    def _find_density(self, state: Any, p: float, T: float, rho: float, way_out: float) -> None:
+        """Solve p(rho) = p at one temperature by Newton's method, so that the phase is the guess's own.
 
-    def phase_of(self, fractions: FloatArray, is_liquid: bool, p_Pa: float, T_K: float) -> PhaseOf:
+        `way_out` is the factor that leads away from unstable densities: up for liquid, down for vapour.
+        """
+        library = self._library
+        state.specify_phase(library.iphase_gas)  # no phase search: density and temperature say it all
+        for _ in range(60):
+            state.update(library.DmolarT_INPUTS, rho, T)
+            stiffness = state.first_partial_deriv(library.iP, library.iDmolar, library.iT)
+            if not stiffness > 0.0:
+                rho *= way_out
+                continue
+            step = (p - state.p()) / stiffness
+            if abs(step) < 1e-12 * rho:
+                return
+            rho += min(max(step, -0.2 * rho), 0.2 * rho)
+        raise ModelFaultError(f"{self.mixture.designation}: no single-phase state at {p / 1e5:.5g} bar and {T:.2f} K")
+
+    def phase_of(self, fractions: FloatArray, rho_guess: float, p_Pa: float, T_K: float) -> PhaseOf:
         """Return a phase of a composition of its own.
 
         Args:
             fractions: Mole fractions of the phase, shape (components,). [-]
-            is_liquid: Whether the liquid phase is imposed, else the vapour.
+            rho_guess: Molar density to start from; it decides which phase is found. [mol/m3]
             p_Pa: Pressure. [Pa]
             T_K: Temperature. [K]
-        Raises: ModelFaultError if the library finds no such phase.
+        Raises: ModelFaultError if there is no such phase near the guess.
         """
-        library, probe = self._library, self._probe
+        probe = self._probe
         probe.set_mole_fractions(list(fractions))
-        self._impose(probe, library.iphase_liquid if is_liquid else library.iphase_gas, p_Pa, T_K)
+        is_vapour = rho_guess < 3.0 * p_Pa / (self._state.gas_constant() * T_K)
+        self._find_density(probe, p_Pa, T_K, rho_guess, 0.9 if is_vapour else 1.1)
         coefficients = [probe.fugacity_coefficient(i) for i in range(len(fractions))]
         return PhaseOf(
-            fractions, np.log(coefficients), probe.hmolar(), probe.smolar(), probe.rhomolar(), probe.molar_mass()
+            fractions,
+            np.log(coefficients),
+            probe.hmolar(),
+            probe.smolar(),
+            probe.rhomolar(),
+            probe.molar_mass(),
         )
 
     def gas_at_entropy(self, p_Pa: float, s_J_per_kgK: float, T_guess_K: float) -> PhaseState:
@@ -317,14 +347,9 @@ class EquationModel:
         Raises: NoSolutionError if it does not converge.
         Source: (ds/dT) at constant pressure = cp / T.
         """
-        T = T_guess_K
-        for _ in range(30):
-            state = self.gas(p_Pa, T)
-            step = (s_J_per_kgK - state.s_J_per_kgK) * T / state.cp_J_per_kgK
-            if abs(step) < 1e-9 * T:
-                return state
-            T += step
-        raise NoSolutionError(f"{self.mixture.designation}: no vapour of entropy {s_J_per_kgK:.6g} J/(kg K)")
+        return self._gas_where(
+            p_Pa, T_guess_K, lambda state: (s_J_per_kgK - state.s_J_per_kgK) * state.T_K / state.cp_J_per_kgK
+        )
 
     def gas_at_enthalpy(self, p_Pa: float, h_J_per_kg: float, T_guess_K: float) -> PhaseState:
         """Return the vapour state of a given enthalpy at a pressure, by Newton's method on temperature.
@@ -332,14 +357,16 @@ class EquationModel:
         Raises: NoSolutionError if it does not converge.
         Source: (dh/dT) at constant pressure = cp.
         """
-        T = T_guess_K
-        for _ in range(30):
-            state = self.gas(p_Pa, T)
-            step = (h_J_per_kg - state.h_J_per_kg) / state.cp_J_per_kgK
-            if abs(step) < 1e-9 * T:
+        return self._gas_where(p_Pa, T_guess_K, lambda state: (h_J_per_kg - state.h_J_per_kg) / state.cp_J_per_kgK)
+
+    def _gas_where(self, p: float, T: float, step_of: Callable[[PhaseState], float]) -> PhaseState:
+        for _ in range(40):
+            state = self.gas(p, T)
+            step = step_of(state)
+            if abs(step) < 1e-10 * T:
                 return state
-            T += step
-        raise NoSolutionError(f"{self.mixture.designation}: no vapour of enthalpy {h_J_per_kg:.6g} J/kg")
+            T += min(max(step, -60.0), 60.0)
+        raise NoSolutionError(f"{self.mixture.designation}: no vapour state found at {p / 1e5:.5g} bar")
 
     def at_pressure(self, p_Pa: float, near: Equilibrium) -> Equilibrium:
         """Return the equilibrium of the quality of `near` at a pressure, by Newton's method on ln p(1/T).
@@ -381,7 +408,7 @@ def _extrapolated(before: Equilibrium | None, last: Equilibrium, T: float) -> Eq
     inverse = along * before.T_K / T
 
     def geometric(new: float, old: float) -> float:
-        return new * (new / old) ** inverse
+        return new * math.exp(inverse * math.log(new / old))
 
     x = np.clip(last.x + along * (last.x - before.x), 1e-9, 1.0)
     y = np.clip(last.y + along * (last.y - before.y), 1e-9, 1.0)

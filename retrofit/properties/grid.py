@@ -132,7 +132,7 @@ class Surface:
 
         def point(quantity: int) -> FloatArray:
             f, fx, fy, fxy = self.nodes[quantity]
-            total = b0 * (a0 * f[near] + a1 * fx[near] + a2 * f[far] + a3 * fx[far])
+            total: FloatArray = b0 * (a0 * f[near] + a1 * fx[near] + a2 * f[far] + a3 * fx[far])
             total += b1 * (a0 * fy[near] + a1 * fxy[near] + a2 * fy[far] + a3 * fxy[far])
             n1, f1 = near + 1, far + 1
             total += b2 * (a0 * f[n1] + a1 * fx[n1] + a2 * f[f1] + a3 * fx[f1])

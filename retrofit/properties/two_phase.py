@@ -8,7 +8,7 @@ bubble point upward in quality; the walk has to end on the dew line, which check
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
@@ -16,17 +16,19 @@ from retrofit.errors import ModelFaultError, NoSolutionError
 from retrofit.properties.equation import EquationModel, Equilibrium, PhaseOf
 from retrofit.properties.grid import FloatArray
 
-RATIO_TOLERANCE = 1e-9
+RATIO_TOLERANCE = 1e-7  # of ln K: a millionth of a kelvin; the library itself is no steadier at low pressure
 MOST_ITERATIONS = 200
 
 
 @dataclass(frozen=True)
 class _Iterate:
-    """Where an iteration stands: temperature, logarithms of the ratios, and their rise with temperature."""
+    """Where an iteration stands: temperature, ln K, its rise with temperature, and the molar densities."""
 
     T_K: float
     ln_ratios: FloatArray
     slope: float
+    rho_liquid: float
+    rho_vapour: float
 
 
 def walk_qualities(model: EquationModel, bubble: Equilibrium, qualities: Sequence[float]) -> list[Equilibrium]:
@@ -42,15 +44,15 @@ def walk_qualities(model: EquationModel, bubble: Equilibrium, qualities: Sequenc
     if model.mixture.is_pure:
         raise ValueError("a pure fluid evaporates at one temperature: mix its saturated states instead")
     rise = 2500.0 / bubble.T_K**2  # d ln K / dT of a refrigerant, roughly: latent heat / (R T^2)
-    last = _Iterate(bubble.T_K, np.log(bubble.y / bubble.x), rise)
+    last = _Iterate(bubble.T_K, np.log(bubble.y / bubble.x), rise, bubble.rho_liquid, bubble.rho_vapour)
     before, before_quality, quality_now = last, 0.0, 0.0
     found = []
     for quality in qualities:
         along = (quality - quality_now) / (quality_now - before_quality) if quality_now > before_quality else 0.0
-        guess = _Iterate(
-            last.T_K + along * (last.T_K - before.T_K),
-            last.ln_ratios + along * (last.ln_ratios - before.ln_ratios),
-            last.slope,
+        guess = replace(
+            last,
+            T_K=last.T_K + along * (last.T_K - before.T_K),
+            ln_ratios=last.ln_ratios + along * (last.ln_ratios - before.ln_ratios),
         )
         state, done = _equilibrium(model, bubble.p_Pa, quality, guess)
         before, before_quality, last, quality_now = last, quality_now, done, quality
@@ -67,11 +69,11 @@ def _equilibrium(model: EquationModel, p_Pa: float, quality: float, at: _Iterate
         ratios = np.exp(at.ln_ratios + shift)
         x = model.z / (1.0 + quality * (ratios - 1.0))
         y = ratios * x
-        liquid = model.phase_of(x, True, p_Pa, T)
-        vapour = model.phase_of(y, False, p_Pa, T)
+        liquid = model.phase_of(x, at.rho_liquid, p_Pa, T)
+        vapour = model.phase_of(y, at.rho_vapour, p_Pa, T)
         ln_ratios = liquid.ln_fugacity_coefficients - vapour.ln_fugacity_coefficients
         done = bool(np.max(np.abs(ln_ratios - at.ln_ratios - shift)) < RATIO_TOLERANCE)
-        at = _Iterate(T, ln_ratios, at.slope)
+        at = _Iterate(T, ln_ratios, at.slope, liquid.rho, vapour.rho)
         if done:
             return _whole(model, p_Pa, T, quality, liquid, vapour), at
     raise ModelFaultError(
@@ -87,7 +89,7 @@ def _common_shift(z: FloatArray, ln_ratios: FloatArray, quality: float) -> float
         below = 1.0 + quality * (ratios - 1.0)
         excess = float(np.sum(z * (ratios - 1.0) / below))
         step = excess / float(np.sum(z * ratios / below**2))
-        shift -= step
+        shift -= min(max(step, -0.5), 0.5)
         if abs(step) < 1e-13:
             return shift
     raise NoSolutionError("the balance of matter between liquid and vapour does not close")
