@@ -6,7 +6,7 @@ range raises `OutsideValidRangeError` with the range, or is NaN if the fluid was
 
 from __future__ import annotations
 
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, fields, replace
 
 import numpy as np
 from numpy.typing import ArrayLike
@@ -129,6 +129,16 @@ class Fluid:
         T, h, s, ln_rho = self.tables.dew(np.log(p), 0, 1, 2, 3)
         return State(p, T, h, s, np.exp(ln_rho), np.ones_like(T), np.ones_like(T))
 
+    def dew_slope(self, p_Pa: ArrayLike) -> FloatArray:
+        """Return the slope of the dew temperature along ln p. [K]
+
+        Args:
+            p_Pa: Pressure. [Pa]
+        Raises: OutsideValidRangeError outside the range of the dew line.
+        """
+        p = self._pressure_inside(p_Pa, self.tables.dew.x, "dew pressure")
+        return self.tables.dew.slope(np.log(p), 0)
+
     # -- vapour ----------------------------------------------------------------------------------
 
     def vapour(self, p_Pa: ArrayLike, superheat_K: ArrayLike) -> State:
@@ -196,6 +206,24 @@ class Fluid:
             return T
         h_wet = np.minimum(above, 0.0) + dew.h_J_per_kg
         return np.where(wet, self.two_phase(dew.p_Pa, h_wet).T_K, T)
+
+    def above_bubble(self, p_Pa: ArrayLike, h_J_per_kg: ArrayLike) -> State:
+        """Return the state at a pressure and enthalpy, superheated or wet.
+
+        Args:
+            p_Pa: Pressure. [Pa]
+            h_J_per_kg: Enthalpy. [J/kg]
+        Raises: OutsideValidRangeError outside the range of the tables.
+        """
+        dew = self.dew(p_Pa)
+        h = np.asarray(h_J_per_kg, dtype=float)
+        heat = np.maximum(self.T_at_enthalpy(p_Pa, h) - dew.T_K, 0.0)
+        dry = self.vapour(p_Pa, heat)
+        is_wet = h < dew.h_J_per_kg
+        if not np.any(is_wet):
+            return replace(dry, h_J_per_kg=np.broadcast_to(h, dry.T_K.shape))
+        wet = self.two_phase(p_Pa, np.minimum(h, dew.h_J_per_kg))
+        return State(*(np.where(is_wet, getattr(wet, f.name), getattr(dry, f.name)) for f in fields(State)))
 
     # -- two-phase and liquid --------------------------------------------------------------------
 

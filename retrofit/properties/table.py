@@ -20,7 +20,7 @@ from retrofit.properties.range import SaturationSpan
 from retrofit.properties.two_phase import walk_qualities
 
 LARGEST_SUBCOOLING_K = 80.0
-LARGEST_SUPERHEAT_K = 200.0
+LARGEST_SUPERHEAT_K = 250.0
 LARGEST_SUPERHEAT_LIGHT_K = 380.0  # small molecules have few ways to store heat: compression makes them hotter
 LIGHT_KG_PER_MOL = 0.030
 
@@ -111,7 +111,7 @@ def build_tables(model: EquationModel, span: SaturationSpan, fineness: float = 1
     dew = model.trace(span.dew, list(temperatures))
     numbers = _numbers(model, span)
     bubble_curve, dew_curve = _along_pressure(bubble), _along_pressure(dew)
-    heated = _vapour_nodes(model, dew, _graded(numbers.superheat_highest_K, round(44 * fineness), 2.0))
+    heated = _vapour_nodes(model, dew, _graded(numbers.superheat_highest_K, round(48 * fineness), 2.0))
     return Tables(
         pressure=Curve.through(temperatures, np.log([[point.p_Pa for point in line] for line in (bubble, dew)])),
         bubble=bubble_curve,

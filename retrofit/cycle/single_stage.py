@@ -1,0 +1,144 @@
+"""Single-stage cycle: evaporator, suction line, compressor, condenser, expansion valve."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import ArrayLike, NDArray
+
+from retrofit.properties import Fluid
+
+FloatArray = NDArray[np.float64]
+
+
+@dataclass(frozen=True)
+class Settings:
+    """What is held equal for every refrigerant; each may be an array.
+
+    Attributes:
+        useful_superheat_K: Superheat picked up inside the evaporator: it cools.
+        line_superheat_K: Superheat picked up after it: it only makes the suction gas hotter.
+        subcooling_K: Temperature below the bubble point at the expansion valve.
+        isentropic_efficiency: Isentropic work over real work.
+        volumetric_efficiency: Volume drawn in over swept volume.
+    """
+
+    useful_superheat_K: ArrayLike = 5.0
+    line_superheat_K: ArrayLike = 0.0
+    subcooling_K: ArrayLike = 0.0
+    isentropic_efficiency: ArrayLike = 0.70
+    volumetric_efficiency: ArrayLike = 0.90
+
+
+@dataclass(frozen=True)
+class Cycle:
+    """One cycle, or an array of them; all arrays have the same shape.
+
+    Attributes:
+        p_evap_Pa, p_cond_Pa: Pressures of the two exchangers; no pressure drop is counted.
+        T_evap_dew_K, T_evap_inlet_K: Dew point, and temperature after the expansion valve.
+        T_cond_dew_K, T_cond_bubble_K: Dew and bubble point in the condenser.
+        T_suction_K: Temperature at the compressor inlet.
+        T_discharge_K, T_discharge_isentropic_K: Temperature after real and after isentropic compression.
+        h_evap_in_J_per_kg, h_evap_out_J_per_kg: Enthalpy into and out of the evaporator.
+        h_suction_J_per_kg, h_discharge_J_per_kg, h_discharge_isentropic_J_per_kg: Enthalpy around the compressor.
+        s_suction_J_per_kgK: Entropy at the compressor inlet.
+        density_suction_kg_per_m3: Density at the compressor inlet.
+        settings: What the cycle was solved with.
+    """
+
+    p_evap_Pa: FloatArray
+    p_cond_Pa: FloatArray
+    T_evap_dew_K: FloatArray
+    T_evap_inlet_K: FloatArray
+    T_cond_dew_K: FloatArray
+    T_cond_bubble_K: FloatArray
+    T_suction_K: FloatArray
+    T_discharge_K: FloatArray
+    T_discharge_isentropic_K: FloatArray
+    h_evap_in_J_per_kg: FloatArray
+    h_evap_out_J_per_kg: FloatArray
+    h_suction_J_per_kg: FloatArray
+    h_discharge_J_per_kg: FloatArray
+    h_discharge_isentropic_J_per_kg: FloatArray
+    s_suction_J_per_kgK: FloatArray
+    density_suction_kg_per_m3: FloatArray
+    settings: Settings
+
+    @property
+    def refrigerating_effect_J_per_kg(self) -> FloatArray:
+        """Return the heat taken up in the evaporator by each kilogram; line superheat does not count. [J/kg]"""
+        return self.h_evap_out_J_per_kg - self.h_evap_in_J_per_kg
+
+    @property
+    def work_J_per_kg(self) -> FloatArray:
+        """Return the compressor work on each kilogram. [J/kg]"""
+        return self.h_discharge_J_per_kg - self.h_suction_J_per_kg
+
+    @property
+    def line_heat_J_per_kg(self) -> FloatArray:
+        """Return the heat each kilogram picks up in the suction line. [J/kg]"""
+        return self.h_suction_J_per_kg - self.h_evap_out_J_per_kg
+
+    @property
+    def heat_rejected_J_per_kg(self) -> FloatArray:
+        """Return the heat given off between discharge and expansion valve by each kilogram. [J/kg]"""
+        return self.h_discharge_J_per_kg - self.h_evap_in_J_per_kg
+
+    @property
+    def cop(self) -> FloatArray:
+        """Return the coefficient of performance, cooling over compressor power. [-]"""
+        return self.refrigerating_effect_J_per_kg / self.work_J_per_kg
+
+    @property
+    def volumetric_capacity_J_per_m3(self) -> FloatArray:
+        """Return the cooling done by each cubic metre drawn in at the compressor inlet. [J/m3]"""
+        return self.refrigerating_effect_J_per_kg * self.density_suction_kg_per_m3
+
+    @property
+    def pressure_ratio(self) -> FloatArray:
+        """Return condensing over evaporating pressure, absolute. [-]"""
+        return self.p_cond_Pa / self.p_evap_Pa
+
+
+def solve_cycle(fluid: Fluid, p_evap_Pa: ArrayLike, p_cond_Pa: ArrayLike, settings: Settings) -> Cycle:
+    """Return the cycle between two pressures.
+
+    Args:
+        fluid: Refrigerant.
+        p_evap_Pa: Pressure of the evaporator and at the compressor inlet. [Pa]
+        p_cond_Pa: Pressure of the condenser, from compressor to expansion valve. [Pa]
+        settings: Superheat, subcooling and efficiencies. [K, -]
+    Returns: The cycle; its arrays have the broadcast shape of everything given.
+    Raises: OutsideValidRangeError if a state lies outside the fluid's range (NaN there if it is lenient).
+    Source: energy balance of each part; isentropic efficiency = isentropic work / real work.
+    """
+    evaporator = fluid.vapour(p_evap_Pa, settings.useful_superheat_K)
+    superheat = np.asarray(settings.useful_superheat_K) + np.asarray(settings.line_superheat_K)
+    suction = fluid.vapour(p_evap_Pa, superheat)
+    h_isentropic = fluid.h_at_entropy(p_cond_Pa, suction.s_J_per_kgK)
+    work = (h_isentropic - suction.h_J_per_kg) / np.asarray(settings.isentropic_efficiency)
+    h_discharge = suction.h_J_per_kg + work
+    dew, bubble = fluid.dew(p_cond_Pa), fluid.bubble(p_cond_Pa)
+    liquid = fluid.liquid(p_cond_Pa, settings.subcooling_K)
+    inlet = fluid.two_phase(p_evap_Pa, liquid.h_J_per_kg)
+    parts = np.broadcast_arrays(
+        evaporator.p_Pa,
+        dew.p_Pa,
+        evaporator.T_K - np.asarray(settings.useful_superheat_K),
+        inlet.T_K,
+        dew.T_K,
+        bubble.T_K,
+        suction.T_K,
+        fluid.T_at_enthalpy(p_cond_Pa, h_discharge),
+        fluid.T_at_enthalpy(p_cond_Pa, h_isentropic),
+        liquid.h_J_per_kg,
+        evaporator.h_J_per_kg,
+        suction.h_J_per_kg,
+        h_discharge,
+        h_isentropic,
+        suction.s_J_per_kgK,
+        suction.density_kg_per_m3,
+    )
+    return Cycle(*parts, settings=settings)
