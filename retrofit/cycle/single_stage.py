@@ -123,22 +123,23 @@ def solve_cycle(fluid: Fluid, p_evap_Pa: ArrayLike, p_cond_Pa: ArrayLike, settin
     dew, bubble = fluid.dew(p_cond_Pa), fluid.bubble(p_cond_Pa)
     liquid = fluid.liquid(p_cond_Pa, settings.subcooling_K)
     inlet = fluid.two_phase(p_evap_Pa, liquid.h_J_per_kg)
-    parts = np.broadcast_arrays(
-        evaporator.p_Pa,
-        dew.p_Pa,
-        evaporator.T_K - np.asarray(settings.useful_superheat_K),
-        inlet.T_K,
-        dew.T_K,
-        bubble.T_K,
-        suction.T_K,
-        fluid.T_at_enthalpy(p_cond_Pa, h_discharge),
-        fluid.T_at_enthalpy(p_cond_Pa, h_isentropic),
-        liquid.h_J_per_kg,
-        evaporator.h_J_per_kg,
-        suction.h_J_per_kg,
-        h_discharge,
-        h_isentropic,
-        suction.s_J_per_kgK,
-        suction.density_kg_per_m3,
-    )
-    return Cycle(*parts, settings=settings)
+    arrays = {
+        "p_evap_Pa": evaporator.p_Pa,
+        "p_cond_Pa": dew.p_Pa,
+        "T_evap_dew_K": evaporator.T_K - np.asarray(settings.useful_superheat_K),
+        "T_evap_inlet_K": inlet.T_K,
+        "T_cond_dew_K": dew.T_K,
+        "T_cond_bubble_K": bubble.T_K,
+        "T_suction_K": suction.T_K,
+        "T_discharge_K": fluid.T_at_enthalpy(p_cond_Pa, h_discharge),
+        "T_discharge_isentropic_K": fluid.T_at_enthalpy(p_cond_Pa, h_isentropic),
+        "h_evap_in_J_per_kg": liquid.h_J_per_kg,
+        "h_evap_out_J_per_kg": evaporator.h_J_per_kg,
+        "h_suction_J_per_kg": suction.h_J_per_kg,
+        "h_discharge_J_per_kg": h_discharge,
+        "h_discharge_isentropic_J_per_kg": h_isentropic,
+        "s_suction_J_per_kgK": suction.s_J_per_kgK,
+        "density_suction_kg_per_m3": suction.density_kg_per_m3,
+    }
+    shape = np.broadcast_shapes(*(np.shape(array) for array in arrays.values()))
+    return Cycle(settings=settings, **{name: np.broadcast_to(array, shape) for name, array in arrays.items()})
