@@ -1,0 +1,194 @@
+"""The frozen result of a study. Report, page, terminal, JSON and spreadsheet show this and nothing else."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+from typing import Generic, TypeVar
+
+import numpy as np
+from numpy.typing import NDArray
+
+from retrofit.case import Case
+from retrofit.properties import Grade
+from retrofit.refrigerants import Caution, Refrigerant
+
+FloatArray = NDArray[np.float64]
+Number = TypeVar("Number", float, FloatArray)
+
+
+@dataclass(frozen=True)
+class Performance(Generic[Number]):
+    """What a plant does with one refrigerant on one basis; numbers, or arrays over conditions.
+
+    Attributes:
+        cooling_W: Cooling.
+        p_evap_Pa, p_cond_Pa, pressure_ratio: Pressures, absolute, and their ratio.
+        T_evap_dew_K, T_evap_inlet_K, T_evap_mean_K: Dew point, after the expansion valve, and their mean.
+        T_cond_dew_K, T_cond_bubble_K, T_cond_mean_K: Dew and bubble point in the condenser, and their mean.
+        glide_evap_K, glide_cond_K: Dew point minus inlet; dew minus bubble point.
+        T_suction_K, T_discharge_K, T_discharge_isentropic_K: Around the compressor.
+        cop: Cooling over compressor power.
+        volumetric_capacity_J_per_m3: Cooling of each cubic metre drawn in.
+        refrigerating_effect_J_per_kg: Cooling of each kilogram.
+        mass_flow_kg_per_s, suction_volume_flow_m3_per_s: Flow, and its volume at the compressor inlet.
+        swept_volume_m3_per_s: Displacement, suction volume flow over volumetric efficiency.
+        power_W: Compressor power.
+        heat_rejected_W: Heat given off from discharge to expansion valve.
+        line_heat_W: Heat picked up in the suction line.
+    """
+
+    cooling_W: Number
+    p_evap_Pa: Number
+    p_cond_Pa: Number
+    pressure_ratio: Number
+    T_evap_dew_K: Number
+    T_evap_inlet_K: Number
+    T_evap_mean_K: Number
+    T_cond_dew_K: Number
+    T_cond_bubble_K: Number
+    T_cond_mean_K: Number
+    glide_evap_K: Number
+    glide_cond_K: Number
+    T_suction_K: Number
+    T_discharge_K: Number
+    T_discharge_isentropic_K: Number
+    cop: Number
+    volumetric_capacity_J_per_m3: Number
+    refrigerating_effect_J_per_kg: Number
+    mass_flow_kg_per_s: Number
+    suction_volume_flow_m3_per_s: Number
+    swept_volume_m3_per_s: Number
+    power_W: Number
+    heat_rejected_W: Number
+    line_heat_W: Number
+
+
+@dataclass(frozen=True)
+class Point:
+    """One named state of a cycle; `quality` is the vapour mass fraction, None outside the two-phase region."""
+
+    name: str
+    p_Pa: float
+    T_K: float
+    h_J_per_kg: float
+    s_J_per_kgK: float
+    density_kg_per_m3: float
+    quality: float | None
+    molar_quality: float | None
+
+
+@dataclass(frozen=True)
+class EnthalpyZero:
+    """What to take away from enthalpy and entropy so that they stand on a reference in use.
+
+    Attributes:
+        name: The reference, for a caption.
+        h_J_per_kg, s_J_per_kgK: Amounts to subtract.
+    """
+
+    name: str
+    h_J_per_kg: float
+    s_J_per_kgK: float
+
+
+@dataclass(frozen=True)
+class ChartLines:
+    """Lines for a pressure-enthalpy chart of one refrigerant.
+
+    Attributes:
+        T_K: Temperatures along both saturation lines, shape (n,).
+        p_bubble_Pa, h_bubble_J_per_kg, p_dew_Pa, h_dew_J_per_kg: The saturation lines, shape (n,).
+        T_critical_K, p_critical_Pa: Critical point; for a blend where its saturation lines meet.
+        zeros: Enthalpy references by unit system, "si" and "ip".
+    """
+
+    T_K: FloatArray
+    p_bubble_Pa: FloatArray
+    h_bubble_J_per_kg: FloatArray
+    p_dew_Pa: FloatArray
+    h_dew_J_per_kg: FloatArray
+    T_critical_K: float
+    p_critical_Pa: float
+    zeros: Mapping[str, EnthalpyZero]
+
+
+@dataclass(frozen=True)
+class Finding:
+    """Something a check found.
+
+    Attributes:
+        code: Short name, the same everywhere.
+        level: "stop", "work", "note" or "unknown".
+        title, text: For a reader; the text gives the number, the threshold and what to do.
+        source: Where the threshold comes from.
+    """
+
+    code: str
+    level: str
+    title: str
+    text: str
+    source: str
+
+
+@dataclass(frozen=True)
+class Entry:
+    """One refrigerant of a study: the existing one or a candidate.
+
+    Attributes:
+        refrigerant: Its catalogue entry.
+        family: "keep", "convert" or "replace".
+        status: "ok" or "not computed"; `reason` then says why.
+        grade: How far its model can be trusted, None without a model.
+        duty: Same duty: displacement, mass flow and power follow.
+        compressor: Same compressor: capacity and power follow.
+        points: State points of the cycle, beginning at the compressor inlet.
+        lines: Lines for its pressure-enthalpy chart.
+        relative: Ratios to the existing refrigerant.
+        T_discharge_difference_K: Discharge temperature against the existing refrigerant.
+        T_limit_K: Up to where the components' equations of state are stated to hold.
+        cautions: From its safety class; always there.
+        findings, verdict: What the checks say; empty until they have run.
+    """
+
+    refrigerant: Refrigerant
+    family: str
+    status: str
+    reason: str | None
+    cautions: tuple[Caution, ...]
+    grade: Grade | None = None
+    duty: Performance[float] | None = None
+    compressor: Performance[float] | None = None
+    points: tuple[Point, ...] = ()
+    lines: ChartLines | None = None
+    relative: Mapping[str, float] = field(default_factory=dict)
+    T_discharge_difference_K: float | None = None
+    T_limit_K: float | None = None
+    findings: tuple[Finding, ...] = ()
+    verdict: str = ""
+
+
+@dataclass(frozen=True)
+class Comparison:
+    """The result of comparing the candidates of a case with its existing refrigerant.
+
+    Attributes:
+        case: The case as read.
+        existing: The refrigerant in the plant today.
+        candidates: The candidates, in the order of the case.
+        swept_volume_m3_per_s: Swept volume of the basis `compressor`, None if nothing could be computed.
+        swept_volume_from: "case", or "duty" if the case does not give it and today's duty set it.
+        versions: Versions the numbers depend on, by name.
+    """
+
+    case: Case
+    existing: Entry
+    candidates: tuple[Entry, ...]
+    swept_volume_m3_per_s: float | None
+    swept_volume_from: str
+    versions: Mapping[str, str]
+
+    @property
+    def entries(self) -> tuple[Entry, ...]:
+        """Return the existing refrigerant and all candidates."""
+        return (self.existing, *self.candidates)
