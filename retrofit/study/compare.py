@@ -145,7 +145,8 @@ def _candidate(
     on_build: OnBuild | None,
 ) -> Entry:
     changes = change_cautions(existing.refrigerant, refrigerant)
-    family = "replace" if changes else "convert"
+    is_step_known = existing.refrigerant.safety_class.text and refrigerant.safety_class.text
+    family = "replace" if changes and is_step_known else "convert"
     entry = Entry(refrigerant, family, "not computed", None, (*changes, *cautions_for(refrigerant)))
     if targets is None:
         name = existing.refrigerant.designation

@@ -1,0 +1,22 @@
+"""What a result means: gates with thresholds and sources, verdicts, and the answer in plain words.
+
+No check changes a number. A missing datum is a finding of level `unknown`, never a good one.
+"""
+
+from retrofit.checks.answer import Answer, Matter, answer, not_checked
+from retrofit.checks.assess import VERDICTS, assess, verdict
+from retrofit.checks.thresholds import Band, Threshold, model_band, threshold
+
+__all__ = [
+    "VERDICTS",
+    "Answer",
+    "Band",
+    "Matter",
+    "Threshold",
+    "answer",
+    "assess",
+    "model_band",
+    "not_checked",
+    "threshold",
+    "verdict",
+]

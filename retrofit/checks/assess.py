@@ -1,0 +1,47 @@
+"""Running every gate on every refrigerant of a result, and the verdict that follows from what they found."""
+
+from __future__ import annotations
+
+from dataclasses import replace
+
+from retrofit.checks.gates import GATES
+from retrofit.study import Comparison, Entry, Finding
+
+LEVELS = ("stop", "unknown", "work", "note")
+VERDICTS = {"stop": "does not suit", "unknown": "cannot be said", "work": "suits with work"}
+SUITS = "suits"
+
+
+def assess(comparison: Comparison) -> Comparison:
+    """Return the result with findings and a verdict for every refrigerant.
+
+    Args:
+        comparison: A result.
+    Returns: The same numbers, with findings (worst first) and verdicts.
+    """
+    existing = _assessed(comparison, comparison.existing)
+    candidates = tuple(_assessed(comparison, entry) for entry in comparison.candidates)
+    return replace(comparison, existing=existing, candidates=candidates)
+
+
+def _assessed(comparison: Comparison, entry: Entry) -> Entry:
+    found = [finding for gate in GATES for finding in gate(comparison, entry)]
+    if entry.status != "ok":
+        found.insert(0, _not_computed(entry))
+    found.sort(key=lambda finding: LEVELS.index(finding.level))
+    return replace(entry, findings=tuple(found), verdict=verdict(found))
+
+
+def _not_computed(entry: Entry) -> Finding:
+    return Finding("not-computed", "unknown", "Not computed", entry.reason or "", "this tool's limits")
+
+
+def verdict(findings: list[Finding]) -> str:
+    """Return the verdict: a stop decides, then a missing datum, then work. Missing data is never good.
+
+    Args:
+        findings: What the gates found.
+    Returns: "does not suit", "cannot be said", "suits with work" or "suits".
+    """
+    levels = {finding.level for finding in findings}
+    return next((word for level, word in VERDICTS.items() if level in levels), SUITS)

@@ -1,0 +1,367 @@
+"""The gates: each looks at one refrigerant of a result and says what it found, with threshold and source.
+
+Numbers in the texts carry both the value and the limit; temperatures in degC and pressures in bar, as the
+sources give them. No gate changes a number, and none says that a thing may be done.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterator
+
+from retrofit.checks.thresholds import Threshold, model_band, threshold
+from retrofit.refrigerants import parse_safety_class
+from retrofit.study import Comparison, Entry, Finding, Performance
+from retrofit.units import listed
+
+KELVIN = 273.15
+# The catalogue's short names of oil families, and the words of the case file.
+OIL_FAMILIES = {
+    "MO": "mineral",
+    "AB": "alkylbenzene",
+    "POE": "polyol ester",
+    "PVE": "polyvinyl ether",
+    "PAG": "polyalkylene glycol",
+    "PAO": "polyalphaolefin",
+}
+Gate = Callable[[Comparison, Entry], Iterator[Finding]]
+
+
+def capacity_needed_W(comparison: Comparison) -> float:
+    """Return the cooling a candidate has to reach with the existing compressor. [W]
+
+    That is the duty of the case; or what the existing refrigerant reaches by the same numbers, if that is
+    less, since the plant is taken to carry its duty today.
+    """
+    today = comparison.existing.compressor
+    duty = comparison.case.duty.cooling_W
+    return min(duty, today.cooling_W) if today else duty
+
+
+def class_change(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
+    """Stop a candidate of a less mild safety class: by default that is a new plant, not a conversion."""
+    if entry is comparison.existing:
+        return
+    old, new = comparison.existing.refrigerant, entry.refrigerant
+    classes = [parse_safety_class(item.safety_class.value) for item in (old, new)]
+    if None in classes:
+        yield Finding(
+            "safety-class",
+            "unknown",
+            "Safety class not stated",
+            f"The safety class of {old.designation} or {new.designation} is not stated, so the step from one to the "
+            "other cannot be judged. Look it up in ASHRAE 34 or ISO 817 before anything else.",
+            new.safety_class.source,
+        )
+    elif entry.family == "replace":
+        yield Finding(
+            "safety-class",
+            "stop",
+            f"Class {new.safety_class.text} in a plant built for class {old.safety_class.text}",
+            f"{new.designation} ({new.safety_class.text}) is not a conversion of equipment built for "
+            f"{old.designation} ({old.safety_class.text}): the whole system would have to meet the standard for the "
+            "new class, with owner and authority informed. Treat it as a new, purpose-built plant.",
+            "ASHRAE 15 and EN 378 as summarised in trade guidance (from memory); equipment listings",
+        )
+
+
+def capacity(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
+    """Compare the cooling with the existing compressor with the cooling needed."""
+    if entry.compressor is None:
+        return
+    limit, band = threshold("capacity"), model_band()["capacity"].value
+    share = entry.compressor.cooling_W / capacity_needed_W(comparison)
+    if entry is comparison.existing:
+        yield from _today_against_duty(comparison, entry.compressor)
+        return
+    level = limit.level_below(share)
+    if level is None:
+        return
+    doubt = f" The shortfall lies within the ±{band:.0%} of the model." if share > 1.0 - band else ""
+    yield Finding(
+        "capacity",
+        level,
+        "Less cooling than needed with the existing compressor",
+        f"{entry.compressor.cooling_W / 1e3:.4g} kW, {share:.0%} of the {capacity_needed_W(comparison) / 1e3:.4g} kW "
+        f"needed.{doubt} Reduce the load, add displacement or choose another refrigerant.",
+        limit.source,
+    )
+
+
+def _today_against_duty(comparison: Comparison, today: Performance[float]) -> Iterator[Finding]:
+    duty = comparison.case.duty.cooling_W
+    if today.cooling_W >= duty * (1.0 - 0.02):
+        return
+    yield Finding(
+        "inputs-disagree",
+        "note",
+        "Displacement and duty of the case do not quite agree",
+        f"With the displacement and efficiencies given, today's compressor reaches {today.cooling_W / 1e3:.4g} kW, "
+        f"{today.cooling_W / duty:.0%} of the duty of {duty / 1e3:.4g} kW. Candidates are measured against what it "
+        "reaches; check swept volume, speed and volumetric efficiency.",
+        "numbers of the case",
+    )
+
+
+def discharge_temperature(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
+    """Compare the discharge temperature with what oil and valves bear."""
+    if entry.duty is None:
+        return
+    limit, found = threshold("discharge_temperature"), entry.duty.T_discharge_K - KELVIN
+    level = limit.level(found)
+    if level is not None:
+        yield Finding(
+            "discharge-temperature",
+            level,
+            "Hot discharge",
+            f"{found:.0f} °C at the compressor outlet, against {_limits(limit, '°C')}. Ask the maker; lower return-gas "
+            "temperature, head cooling or liquid injection are the usual ways.",
+            limit.source,
+        )
+    if entry.T_limit_K is not None and entry.duty.T_discharge_K > entry.T_limit_K:
+        yield Finding(
+            "model-range",
+            "note",
+            "Discharge beyond the range of the equation of state",
+            f"{found:.0f} °C is above {entry.T_limit_K - KELVIN:.0f} °C, up to where the equation of state of every "
+            "component is stated to hold; the discharge temperature is an extrapolation.",
+            "limits in the property library",
+        )
+
+
+def pressure_ratio(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
+    """Compare the pressure ratio with what one stage does."""
+    if entry.duty is None:
+        return
+    limit = threshold("pressure_ratio")
+    level = limit.level(entry.duty.pressure_ratio)
+    if level is not None:
+        yield Finding(
+            "pressure-ratio",
+            level,
+            "High pressure ratio",
+            f"{entry.duty.pressure_ratio:.1f} (absolute), against {_limits(limit, '')}. Ask the maker for the envelope "
+            "with this refrigerant.",
+            limit.source,
+        )
+
+
+def high_side(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
+    """Compare the condensing pressure with the nameplate of the high side."""
+    plant, limit = comparison.case.plant, threshold("high_side")
+    if entry.duty is None:
+        return
+    if plant.high_side_limit_Pa is None:
+        yield Finding(
+            "high-side",
+            "unknown",
+            "Nameplate pressure not given",
+            f"Condensing at {entry.duty.p_cond_Pa / 1e5:.1f} bar a cannot be compared with what the high side is built "
+            "for. Give `high_side_limit` in [plant].",
+            limit.source,
+        )
+        return
+    # Nameplates and switches count from the air around them.
+    gauge = entry.duty.p_cond_Pa - plant.ambient_pressure_Pa
+    name_plate = plant.high_side_limit_Pa - plant.ambient_pressure_Pa
+    level = limit.level(gauge / name_plate)
+    if level is not None:
+        yield Finding(
+            "high-side",
+            level,
+            "Condensing pressure close to or above the nameplate",
+            f"{gauge / 1e5:.1f} bar g at the condensing temperature of the case, {gauge / name_plate:.0%} of the "
+            f"nameplate's {name_plate / 1e5:.1f} bar g; a hotter day and standstill come on top.",
+            limit.source,
+        )
+
+
+def near_critical(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
+    """Compare the condensing temperature with the critical one."""
+    if entry.duty is None or entry.lines is None:
+        return
+    limit = threshold("critical_distance")
+    distance = entry.lines.T_critical_K - entry.duty.T_cond_mean_K
+    level = limit.level_below(distance)
+    if level is not None:
+        yield Finding(
+            "near-critical",
+            level,
+            "Condensing near the critical temperature",
+            f"{distance:.0f} K below the critical temperature of {entry.lines.T_critical_K - KELVIN:.0f} °C, against "
+            f"{_limits(limit, 'K')}. On a hotter day capacity and COP fall fast.",
+            limit.source,
+        )
+
+
+def vacuum(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
+    """Tell where the low side runs below the pressure of the air around it."""
+    if entry.duty is None:
+        return
+    ambient = comparison.case.plant.ambient_pressure_Pa
+    if entry.duty.p_evap_Pa < ambient:
+        yield Finding(
+            "vacuum",
+            "work",
+            "Low side below atmospheric pressure",
+            f"Evaporating at {entry.duty.p_evap_Pa / 1e5:.2f} bar a; the air at the plant has "
+            f"{ambient / 1e5:.2f} bar a. Air and moisture are drawn in through any leak, and leaks cannot be found from outside.",
+            "physics",
+        )
+
+
+def glide(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
+    """Set the glide against the way the evaporators are fed."""
+    if entry.duty is None:
+        return
+    found, feed = entry.duty.glide_evap_K, comparison.case.plant.evaporator
+    flooded, high = threshold("glide_flooded"), threshold("glide")
+    level = flooded.level(found)
+    if level is not None and feed in ("flooded", "pumped"):
+        yield Finding(
+            "glide",
+            level,
+            f"Glide in a {feed} evaporator",
+            f"{found:.1f} K of glide in the evaporator, against {flooded.stop:.0f} K: the liquid pool takes another "
+            "composition than what circulates.",
+            flooded.source,
+        )
+    elif level is not None and feed is None:
+        yield Finding(
+            "glide",
+            "unknown",
+            "Glide, and the evaporator's feed is not stated",
+            f"{found:.1f} K of glide in the evaporator: in a flooded or pumped evaporator that rules the refrigerant "
+            "out. Give `evaporator` in [plant].",
+            flooded.source,
+        )
+    elif (mild := high.level(found)) is not None:
+        yield Finding(
+            "glide",
+            mild,
+            "Glide in the evaporator",
+            f"{found:.1f} K between expansion valve and dew point. Superheat is counted from the dew point, subcooling "
+            "from the bubble point; set points and valve settings move.",
+            high.source,
+        )
+
+
+def oil(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
+    """Compare the oil in the plant with the oils usual for a candidate."""
+    if entry is comparison.existing:
+        return
+    name, here = entry.refrigerant.designation, comparison.case.plant.oil
+    usual = entry.refrigerant.lubricants
+    families = [word for code, word in OIL_FAMILIES.items() if code in usual.text]
+    if not families or here in (None, "unknown", "mixed"):
+        yield Finding(
+            "oil",
+            "unknown",
+            "Oil not known" if families else "Usual oil of the refrigerant not stated",
+            f"Usual for {name}: {listed(families) if families else 'not stated'}. In the plant: "
+            f"{here or 'not stated'}. Take a sample and ask the maker.",
+            usual.source,
+        )
+    elif here not in families:
+        yield Finding(
+            "oil",
+            "work",
+            "Another oil is usual",
+            f"In the plant: {here}. Usual for {name}: {listed(families)}. Expect oil changes until little of the old "
+            "oil is left, and ask the maker for grade and limit.",
+            usual.source,
+        )
+
+
+def compressor_load(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
+    """Compare power and heat rejected, same compressor, with today's."""
+    if entry is comparison.existing or not entry.relative:
+        return
+    motor, condenser = threshold("motor_power"), threshold("heat_rejected")
+    level = motor.level(entry.relative["power"])
+    if level is not None:
+        yield Finding(
+            "motor",
+            level,
+            "More compressor power",
+            f"{entry.relative['power']:.2f} times today's power with the same compressor. Compare motor current with "
+            "the plate, at this point and at pull-down.",
+            motor.source,
+        )
+    level = condenser.level(entry.relative["heat_rejected"])
+    if level is not None:
+        yield Finding(
+            "condenser",
+            level,
+            "More heat to reject",
+            f"{entry.relative['heat_rejected']:.2f} times today's heat with the same compressor, against "
+            f"{_limits(condenser, 'times')}. The condensing temperature will rise unless the condenser has room.",
+            condenser.source,
+        )
+
+
+def model(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
+    """Say where the model of a refrigerant is not good enough to decide on."""
+    if entry.grade is None:
+        return
+    if entry.grade.word in ("weak", "not checked"):
+        yield Finding(
+            "model-grade",
+            "unknown",
+            "Model of the refrigerant weak or not checked",
+            f"{entry.grade.text[0].upper()}{entry.grade.text[1:]}. Get figures from the refrigerant's own tables.",
+            "comparison with the catalogue's boiling points",
+        )
+
+
+def ozone(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
+    """Note a candidate that depletes the ozone layer."""
+    depletion = entry.refrigerant.odp
+    if entry is not comparison.existing and depletion.number:
+        yield Finding(
+            "ozone",
+            "stop",
+            "Depletes the ozone layer",
+            f"Ozone depletion potential {depletion.number:.3g}. Charging a plant with such a refrigerant is banned or "
+            "bound to conditions almost everywhere; ask the authority.",
+            depletion.source,
+        )
+
+
+def always_work(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
+    """List what every conversion needs, whatever the numbers say."""
+    if entry is comparison.existing or entry.status != "ok":
+        return
+    yield Finding(
+        "conversion",
+        "work",
+        "Work that every conversion needs",
+        "Recover and weigh the old charge, new filter driers, tightness test, evacuation, charge by weight, check of "
+        "expansion valves, controls and switches, new label and log, written approval of the compressor maker.",
+        "common practice; changeover procedures of the trade",
+    )
+
+
+GATES: tuple[Gate, ...] = (
+    class_change,
+    ozone,
+    high_side,
+    near_critical,
+    discharge_temperature,
+    pressure_ratio,
+    capacity,
+    glide,
+    vacuum,
+    compressor_load,
+    oil,
+    model,
+    always_work,
+)
+
+
+def _limits(limit: Threshold, unit: str) -> str:
+    parts = [
+        f"{value:g} {unit}".strip() + f" ({word})"
+        for value, word in ((limit.work, "work"), (limit.stop, "stop"))
+        if value is not None
+    ]
+    return " and ".join(parts)
