@@ -4,10 +4,11 @@ No check changes a number. A missing datum is a finding of level `unknown`, neve
 """
 
 from retrofit.checks.answer import Answer, Matter, answer, not_checked
-from retrofit.checks.assess import VERDICTS, assess, verdict
+from retrofit.checks.assess import LEVELS, VERDICTS, assess, verdict
 from retrofit.checks.thresholds import Band, Threshold, model_band, threshold
 
 __all__ = [
+    "LEVELS",
     "VERDICTS",
     "Answer",
     "Band",

@@ -33,7 +33,7 @@ def _assessed(comparison: Comparison, entry: Entry) -> Entry:
 
 
 def _not_computed(entry: Entry) -> Finding:
-    return Finding("not-computed", "unknown", "Not computed", entry.reason or "", "this tool's limits")
+    return Finding("not-computed", "unknown", "Not computed", f"{entry.reason}.", "", "limits of this tool")
 
 
 def verdict(findings: list[Finding]) -> str:

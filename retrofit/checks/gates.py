@@ -49,17 +49,18 @@ def class_change(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             "unknown",
             "Safety class not stated",
             f"The safety class of {old.designation} or {new.designation} is not stated, so the step from one to the "
-            "other cannot be judged. Look it up in ASHRAE 34 or ISO 817 before anything else.",
+            "other cannot be judged.",
+            "Look it up in ASHRAE 34 or ISO 817 before anything else.",
             new.safety_class.source,
         )
     elif entry.family == "replace":
         yield Finding(
             "safety-class",
             "stop",
-            f"Class {new.safety_class.text} in a plant built for class {old.safety_class.text}",
-            f"{new.designation} ({new.safety_class.text}) is not a conversion of equipment built for "
-            f"{old.designation} ({old.safety_class.text}): the whole system would have to meet the standard for the "
-            "new class, with owner and authority informed. Treat it as a new, purpose-built plant.",
+            "Less mild safety class than the plant was built for",
+            f"class {new.safety_class.text}; the plant was built for {old.designation}, class {old.safety_class.text}.",
+            "That is not a conversion: the whole system would have to meet the standard for the new class, with owner "
+            "and authority informed. Treat it as a new, purpose-built plant.",
             "ASHRAE 15 and EN 378 as summarised in trade guidance (from memory); equipment listings",
         )
 
@@ -82,7 +83,8 @@ def capacity(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
         level,
         "Less cooling than needed with the existing compressor",
         f"{entry.compressor.cooling_W / 1e3:.4g} kW, {share:.0%} of the {capacity_needed_W(comparison) / 1e3:.4g} kW "
-        f"needed.{doubt} Reduce the load, add displacement or choose another refrigerant.",
+        f"needed.{doubt}",
+        "Reduce the load, add displacement or choose another refrigerant.",
         limit.source,
     )
 
@@ -96,8 +98,8 @@ def _today_against_duty(comparison: Comparison, today: Performance[float]) -> It
         "note",
         "Displacement and duty of the case do not quite agree",
         f"With the displacement and efficiencies given, today's compressor reaches {today.cooling_W / 1e3:.4g} kW, "
-        f"{today.cooling_W / duty:.0%} of the duty of {duty / 1e3:.4g} kW. Candidates are measured against what it "
-        "reaches; check swept volume, speed and volumetric efficiency.",
+        f"{today.cooling_W / duty:.0%} of the duty of {duty / 1e3:.4g} kW.",
+        "Candidates are measured against what it reaches; check swept volume, speed and volumetric efficiency.",
         "numbers of the case",
     )
 
@@ -113,8 +115,8 @@ def discharge_temperature(comparison: Comparison, entry: Entry) -> Iterator[Find
             "discharge-temperature",
             level,
             "Hot discharge",
-            f"{found:.0f} °C at the compressor outlet, against {_limits(limit, '°C')}. Ask the maker; lower return-gas "
-            "temperature, head cooling or liquid injection are the usual ways.",
+            f"{found:.0f} °C at the compressor outlet, against {_limits(limit, '°C')}.",
+            "Ask the maker; lower return-gas temperature, head cooling or liquid injection are the usual ways.",
             limit.source,
         )
     if entry.T_limit_K is not None and entry.duty.T_discharge_K > entry.T_limit_K:
@@ -123,7 +125,8 @@ def discharge_temperature(comparison: Comparison, entry: Entry) -> Iterator[Find
             "note",
             "Discharge beyond the range of the equation of state",
             f"{found:.0f} °C is above {entry.T_limit_K - KELVIN:.0f} °C, up to where the equation of state of every "
-            "component is stated to hold; the discharge temperature is an extrapolation.",
+            "component is stated to hold.",
+            "The discharge temperature is an extrapolation.",
             "limits in the property library",
         )
 
@@ -139,8 +142,8 @@ def pressure_ratio(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             "pressure-ratio",
             level,
             "High pressure ratio",
-            f"{entry.duty.pressure_ratio:.1f} (absolute), against {_limits(limit, '')}. Ask the maker for the envelope "
-            "with this refrigerant.",
+            f"{entry.duty.pressure_ratio:.1f} (absolute), against {_limits(limit, '')}.",
+            "Ask the maker for the envelope with this refrigerant.",
             limit.source,
         )
 
@@ -156,7 +159,8 @@ def high_side(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             "unknown",
             "Nameplate pressure not given",
             f"Condensing at {entry.duty.p_cond_Pa / 1e5:.1f} bar a cannot be compared with what the high side is built "
-            "for. Give `high_side_limit` in [plant].",
+            "for.",
+            "Give `high_side_limit` in [plant].",
             limit.source,
         )
         return
@@ -170,7 +174,8 @@ def high_side(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             level,
             "Condensing pressure close to or above the nameplate",
             f"{gauge / 1e5:.1f} bar g at the condensing temperature of the case, {gauge / name_plate:.0%} of the "
-            f"nameplate's {name_plate / 1e5:.1f} bar g; a hotter day and standstill come on top.",
+            f"nameplate's {name_plate / 1e5:.1f} bar g, against {_limits(limit, 'of it')}.",
+            "A hotter day and standstill come on top; check switch, relief valve and vessel.",
             limit.source,
         )
 
@@ -188,7 +193,8 @@ def near_critical(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             level,
             "Condensing near the critical temperature",
             f"{distance:.0f} K below the critical temperature of {entry.lines.T_critical_K - KELVIN:.0f} °C, against "
-            f"{_limits(limit, 'K')}. On a hotter day capacity and COP fall fast.",
+            f"{_limits(limit, 'K')}.",
+            "On a hotter day capacity and COP fall fast.",
             limit.source,
         )
 
@@ -204,7 +210,8 @@ def vacuum(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             "work",
             "Low side below atmospheric pressure",
             f"Evaporating at {entry.duty.p_evap_Pa / 1e5:.2f} bar a; the air at the plant has "
-            f"{ambient / 1e5:.2f} bar a. Air and moisture are drawn in through any leak, and leaks cannot be found from outside.",
+            f"{ambient / 1e5:.2f} bar a.",
+            "Air and moisture are drawn in through any leak, and leaks cannot be found from outside.",
             "physics",
         )
 
@@ -221,8 +228,8 @@ def glide(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             "glide",
             level,
             f"Glide in a {feed} evaporator",
-            f"{found:.1f} K of glide in the evaporator, against {flooded.stop:.0f} K: the liquid pool takes another "
-            "composition than what circulates.",
+            f"{found:.1f} K of glide in the evaporator, against {flooded.stop:.0f} K.",
+            "The liquid pool takes another composition than what circulates.",
             flooded.source,
         )
     elif level is not None and feed is None:
@@ -230,8 +237,8 @@ def glide(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             "glide",
             "unknown",
             "Glide, and the evaporator's feed is not stated",
-            f"{found:.1f} K of glide in the evaporator: in a flooded or pumped evaporator that rules the refrigerant "
-            "out. Give `evaporator` in [plant].",
+            f"{found:.1f} K of glide in the evaporator.",
+            "In a flooded or pumped evaporator that rules a refrigerant out. Give `evaporator` in [plant].",
             flooded.source,
         )
     elif (mild := high.level(found)) is not None:
@@ -239,8 +246,9 @@ def glide(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             "glide",
             mild,
             "Glide in the evaporator",
-            f"{found:.1f} K between expansion valve and dew point. Superheat is counted from the dew point, subcooling "
-            "from the bubble point; set points and valve settings move.",
+            f"{found:.1f} K between expansion valve and dew point.",
+            "Superheat is counted from the dew point, subcooling from the bubble point; set points and valve settings "
+            "move.",
             high.source,
         )
 
@@ -249,7 +257,7 @@ def oil(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
     """Compare the oil in the plant with the oils usual for a candidate."""
     if entry is comparison.existing:
         return
-    name, here = entry.refrigerant.designation, comparison.case.plant.oil
+    here = comparison.case.plant.oil
     usual = entry.refrigerant.lubricants
     families = [word for code, word in OIL_FAMILIES.items() if code in usual.text]
     if not families or here in (None, "unknown", "mixed"):
@@ -257,8 +265,8 @@ def oil(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             "oil",
             "unknown",
             "Oil not known" if families else "Usual oil of the refrigerant not stated",
-            f"Usual for {name}: {listed(families) if families else 'not stated'}. In the plant: "
-            f"{here or 'not stated'}. Take a sample and ask the maker.",
+            f"usual {listed(families) if families else 'oil not stated'}; in the plant {here or 'not stated'}.",
+            "Take a sample and ask the maker.",
             usual.source,
         )
     elif here not in families:
@@ -266,8 +274,8 @@ def oil(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             "oil",
             "work",
             "Another oil is usual",
-            f"In the plant: {here}. Usual for {name}: {listed(families)}. Expect oil changes until little of the old "
-            "oil is left, and ask the maker for grade and limit.",
+            f"usual {listed(families)}; in the plant {here}.",
+            "Expect oil changes until little of the old oil is left, and ask the maker for grade and limit.",
             usual.source,
         )
 
@@ -283,8 +291,8 @@ def compressor_load(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             "motor",
             level,
             "More compressor power",
-            f"{entry.relative['power']:.2f} times today's power with the same compressor. Compare motor current with "
-            "the plate, at this point and at pull-down.",
+            f"{entry.relative['power']:.2f} times today's power with the same compressor.",
+            "Compare motor current with the plate, at this point and at pull-down.",
             motor.source,
         )
     level = condenser.level(entry.relative["heat_rejected"])
@@ -294,7 +302,8 @@ def compressor_load(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             level,
             "More heat to reject",
             f"{entry.relative['heat_rejected']:.2f} times today's heat with the same compressor, against "
-            f"{_limits(condenser, 'times')}. The condensing temperature will rise unless the condenser has room.",
+            f"{_limits(condenser, 'times')}.",
+            "The condensing temperature will rise unless the condenser has room.",
             condenser.source,
         )
 
@@ -308,7 +317,8 @@ def model(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             "model-grade",
             "unknown",
             "Model of the refrigerant weak or not checked",
-            f"{entry.grade.text[0].upper()}{entry.grade.text[1:]}. Get figures from the refrigerant's own tables.",
+            f"{entry.grade.text[0].upper()}{entry.grade.text[1:]}.",
+            "Get figures from the refrigerant's own tables.",
             "comparison with the catalogue's boiling points",
         )
 
@@ -321,8 +331,9 @@ def ozone(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             "ozone",
             "stop",
             "Depletes the ozone layer",
-            f"Ozone depletion potential {depletion.number:.3g}. Charging a plant with such a refrigerant is banned or "
-            "bound to conditions almost everywhere; ask the authority.",
+            f"Ozone depletion potential {depletion.number:.3g}.",
+            "Charging a plant with such a refrigerant is banned or bound to conditions almost everywhere; ask the "
+            "authority.",
             depletion.source,
         )
 
@@ -335,6 +346,7 @@ def always_work(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
         "conversion",
         "work",
         "Work that every conversion needs",
+        "",
         "Recover and weigh the old charge, new filter driers, tightness test, evacuation, charge by weight, check of "
         "expansion valves, controls and switches, new label and log, written approval of the compressor maker.",
         "common practice; changeover procedures of the trade",

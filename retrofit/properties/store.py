@@ -16,6 +16,7 @@ import os
 import re
 import tempfile
 import time
+from functools import cache
 from importlib.metadata import version
 from pathlib import Path
 
@@ -41,9 +42,15 @@ def store_folder() -> Path:
     return Path(user_cache_path("retrofit", appauthor=False)) / "tables"
 
 
+@cache
+def library_version() -> str:
+    """Return the version of the property library, without loading it."""
+    return version("CoolProp")
+
+
 def store_key(mixture: Mixture) -> str:
     """Return a key of everything the tables of a mixture depend on."""
-    parts = [FORMAT, version("CoolProp"), mixture.library_names, mixture.mass_fractions]
+    parts = [FORMAT, library_version(), mixture.library_names, mixture.mass_fractions]
     return hashlib.blake2b(json.dumps(parts).encode(), digest_size=10).hexdigest()
 
 

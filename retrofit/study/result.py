@@ -120,15 +120,23 @@ class Finding:
     Attributes:
         code: Short name, the same everywhere.
         level: "stop", "work", "note" or "unknown".
-        title, text: For a reader; the text gives the number, the threshold and what to do.
+        title: What it is about, the same for every refrigerant it is found in.
+        fact: The number of this refrigerant against the threshold.
+        advice: What follows and what to do, the same for every refrigerant; may be empty.
         source: Where the threshold comes from.
     """
 
     code: str
     level: str
     title: str
-    text: str
+    fact: str
+    advice: str
     source: str
+
+    @property
+    def text(self) -> str:
+        """Return fact and advice as one text."""
+        return f"{self.fact} {self.advice}".strip()
 
 
 @dataclass(frozen=True)

@@ -163,7 +163,7 @@ IP = UnitSystem(
     "ip",
     {
         "temperature": Display("°F", FAHRENHEIT, 1, 0),
-        "temperature difference": Display("°R", RANKINE, 1, 0),
+        "temperature difference": Display("°F", RANKINE, 1, 0),
         "pressure": Display("psia", Unit(PSI_PA), 1),
         "gauge pressure": Display("psig", Unit(PSI_PA), 1, 0),
         "cooling": Display("ton", Unit(TON_W), 1),  # of refrigeration, 12 000 Btu/h

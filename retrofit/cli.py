@@ -1,0 +1,217 @@
+"""The command line: options in, calls, text out."""
+
+from __future__ import annotations
+
+import contextlib
+import json
+import os
+import sys
+from collections.abc import Callable
+from functools import wraps
+from pathlib import Path
+from typing import TYPE_CHECKING, Any, NoReturn
+
+import click
+
+from retrofit import __version__
+from retrofit.errors import CaseFileError, RetrofitError
+
+if TYPE_CHECKING:
+    from retrofit.study import Comparison
+
+EPILOG = (
+    "Exit status: 0 done; 1 an error named on the error stream; 2 wrong usage or a case file that cannot be used. "
+    "Nothing here replaces ASHRAE 34 and 15, ISO 817 and 5149 or EN 378, local code and licensed practice."
+)
+CASE = click.Path(path_type=Path)
+WIDEST_PROSE = 100
+
+
+def _guarded(command: Callable[..., None]) -> Callable[..., None]:
+    """Show our own errors as one line (a case file's: one a problem), files' errors likewise; bugs stay loud."""
+
+    @wraps(command)
+    def run(*args: Any, **options: Any) -> None:
+        try:
+            command(*args, **options)
+        except CaseFileError as error:
+            click.echo(str(error), err=True)
+            sys.exit(error.exit_code)
+        except RetrofitError as error:
+            _fail(error.message, error.exit_code)
+        except BrokenPipeError:
+            # The reader has gone; leave quietly, and keep the interpreter from complaining at exit.
+            os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+            sys.exit(1)
+        except OSError as error:
+            _fail(f"{error.filename or 'file'}: {error.strerror or error}", 1)
+
+    return run
+
+
+def _fail(message: str, status: int) -> NoReturn:
+    from retrofit.units import shown
+
+    click.echo(f"retrofit: {shown(message, 2000)}", err=True)
+    sys.exit(status)
+
+
+def _columns() -> int:
+    with contextlib.suppress(OSError, ValueError):
+        return max(60, min(WIDEST_PROSE, os.get_terminal_size().columns))
+    return WIDEST_PROSE
+
+
+def _strong() -> Callable[[str], str]:
+    """Return how a heading is set off: bold on a terminal that wants it."""
+    plain = not sys.stdout.isatty() or os.environ.get("NO_COLOR") or os.environ.get("TERM") == "dumb"
+    return str if plain else lambda text: click.style(text, bold=True)
+
+
+def _say_build(designation: str) -> None:
+    click.echo(f"Building the property tables of {designation}, once for this version…", err=True)
+
+
+def _compared(case_file: Path) -> Comparison:
+    from retrofit.case import read_case
+    from retrofit.checks import assess
+    from retrofit.study import compare as compare_case
+
+    return assess(compare_case(read_case(case_file), _say_build))
+
+
+def _print_json(value: object) -> None:
+    click.echo(json.dumps(value, indent=1, allow_nan=False, ensure_ascii=False))
+
+
+units_option = click.option(
+    "--units", type=click.Choice(["si", "ip"]), default="si", show_default=True, help="Units of what is shown."
+)
+json_option = click.option("--json", "as_json", is_flag=True, help="One JSON object in SI base units.")
+
+
+@click.group(epilog=EPILOG, context_settings={"help_option_names": ["-h", "--help"]})
+@click.version_option(__version__, "-V", "--version", prog_name="retrofit")
+def main() -> None:
+    """Compare the options for changing the refrigerant of an existing vapour-compression plant.
+
+    \b
+    retrofit new plant.toml         start a case file
+    retrofit compare plant.toml     compare the candidates in the terminal
+    retrofit report plant.toml      write the report as one HTML file
+    """
+
+
+@main.command()
+@click.argument("case_file", type=CASE, metavar="FILE")
+@click.option("--force", is_flag=True, help="Overwrite files that are there.")
+@_guarded
+def new(case_file: Path, force: bool) -> None:
+    """Write a new case FILE to fill in, and its schema for editors beside it."""
+    from retrofit.case import SCHEMA_FILE, case_schema, new_case_text
+    from retrofit.report.files import write_whole
+
+    schema = case_file.parent / SCHEMA_FILE
+    if case_file.exists() and not force:
+        _fail(f"{case_file} is there already; choose another name or add --force", 1)
+    write_whole(case_file, new_case_text())
+    write_whole(schema, json.dumps(case_schema(), indent=1) + "\n")
+    click.echo(f"Wrote {case_file} and {schema}. Fill it in, then: retrofit check {case_file}")
+
+
+@main.command()
+@click.argument("case_file", type=CASE, metavar="CASE")
+@_guarded
+def check(case_file: Path) -> None:
+    """Read a CASE file and name every problem in it."""
+    from retrofit.case import read_case
+    from retrofit.units import shown
+
+    case = read_case(case_file)
+    click.echo(f"{shown(str(case_file), 500)}: can be used. Candidates: {', '.join(case.compare.candidates)}.")
+    for default in case.defaults:
+        click.echo(f"  assumed: {default.key} = {default.shown_text} ({default.why})")
+
+
+@main.command()
+@click.argument("case_file", type=CASE, metavar="CASE")
+@units_option
+@json_option
+@click.option("--csv", "as_csv", is_flag=True, help="One line a refrigerant, in SI base units.")
+@_guarded
+def compare(case_file: Path, units: str, as_json: bool, as_csv: bool) -> None:
+    """Compare the candidates of a CASE with the refrigerant in the plant."""
+    if as_json and as_csv:
+        raise click.UsageError("--json and --csv exclude each other")
+    comparison = _compared(case_file)
+    if as_json:
+        from retrofit.report.machine import comparison_json
+
+        _print_json(comparison_json(comparison))
+    elif as_csv:
+        from retrofit.report.machine import comparison_csv
+
+        click.echo(comparison_csv(comparison), nl=False)
+    else:
+        from retrofit.report.terminal import comparison_text
+        from retrofit.units import UNIT_SYSTEMS
+
+        click.echo(comparison_text(comparison, UNIT_SYSTEMS[units], _columns(), _strong()))
+
+
+@main.command()
+@click.argument("case_file", type=CASE, metavar="CASE")
+@click.option("-o", "--output", type=CASE, help="File to write; the case's name with .html if left out.")
+@units_option
+@click.option("--templates", type=CASE, help="Folder of your own templates, laid over the built-in ones.")
+@_guarded
+def report(case_file: Path, output: Path | None, units: str, templates: Path | None) -> None:
+    """Write the report of a CASE as one HTML file."""
+    from datetime import datetime
+
+    from retrofit.report import render_html, write_report
+
+    comparison = _compared(case_file)
+    html = render_html(comparison, units=units, template_folder=templates, made_at=datetime.now().astimezone())
+    path = output or Path(f"{case_file.stem}.html")
+    write_report(path, html)
+    click.echo(f"Wrote {path}. Open it in a browser; print it from there for paper or PDF.")
+
+
+@main.command()
+@click.argument("names", nargs=-1, metavar="[NAME]...")
+@json_option
+@_guarded
+def refrigerants(names: tuple[str, ...], as_json: bool) -> None:
+    """List the refrigerants of the catalogue, or show NAMEs with the source of every value."""
+    from retrofit.refrigerants import designations, find
+    from retrofit.report.catalogue import catalogue_json, catalogue_text, refrigerant_text
+
+    chosen = [find(name) for name in names or designations()]
+    if as_json:
+        _print_json(catalogue_json(chosen))
+    elif names:
+        click.echo("\n\n".join(refrigerant_text(item, _columns(), _strong()) for item in chosen))
+    else:
+        click.echo(catalogue_text(chosen, _strong()))
+
+
+@main.command()
+@click.argument("name", metavar="REFRIGERANT")
+@click.option("--from", "start", default="-40 degC", show_default=True, help='First temperature, such as "-40 degC".')
+@click.option("--to", "stop", default="60 degC", show_default=True, help='Last temperature, such as "140 degF".')
+@click.option("--step", default="5 K", show_default=True, help='Step, such as "1 K".')
+@units_option
+@json_option
+@_guarded
+def pt(name: str, start: str, stop: str, step: str, units: str, as_json: bool) -> None:
+    """Print bubble and dew pressures of a REFRIGERANT against temperature."""
+    from retrofit.report.saturation import saturation_json, saturation_text, temperature_steps
+    from retrofit.study.saturation import saturation_table
+    from retrofit.units import UNIT_SYSTEMS
+
+    table = saturation_table(name, temperature_steps(start, stop, step), _say_build)
+    if as_json:
+        _print_json(saturation_json(table))
+    else:
+        click.echo(saturation_text(table, UNIT_SYSTEMS[units], _columns(), _strong()))

@@ -1,0 +1,43 @@
+"""Writing files whole or not at all."""
+
+from __future__ import annotations
+
+import contextlib
+import os
+import tempfile
+from pathlib import Path
+
+from retrofit.errors import ReportError
+
+
+def write_whole(path: Path, text: str) -> None:
+    """Write a text file under a temporary name in its folder, then rename it into place.
+
+    Args:
+        path: File to write; one that is there is replaced.
+        text: Its content.
+    Raises: ReportError if the folder is missing or cannot be written, or the path is a folder.
+    """
+    if path.is_dir():
+        raise ReportError(f"{path} is a folder; name a file")
+    try:
+        handle, name = tempfile.mkstemp(prefix=".half-", dir=path.parent)
+    except OSError as error:
+        raise ReportError(f"{path.parent} cannot be written: {error.strerror}; choose another folder") from error
+    try:
+        with os.fdopen(handle, "w", encoding="utf-8", newline="\n") as file:
+            file.write(text)
+        os.chmod(name, 0o666 & ~_mask())
+        os.replace(name, path)
+    except OSError as error:
+        raise ReportError(f"{path} cannot be written: {error.strerror}") from error
+    finally:
+        with contextlib.suppress(OSError):
+            os.unlink(name)
+
+
+def _mask() -> int:
+    """Return the process's file mode mask, so that the file gets the mode any new file would."""
+    mask = os.umask(0)
+    os.umask(mask)
+    return mask

@@ -1,0 +1,96 @@
+"""A pressure-temperature table as text and as the JSON contract `retrofit.saturation/1`."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import asdict
+from typing import Any
+
+from retrofit.errors import QuantityError
+from retrofit.refrigerants import Caution, cautions_for
+from retrofit.report.text_table import Column, paragraph, text_table
+from retrofit.study.saturation import SaturationRow, SaturationTable
+from retrofit.units import STANDARD_ATMOSPHERE_PA, UnitSystem, parse_quantity
+
+MOST_ROWS = 5000
+
+
+def temperature_steps(start: str, stop: str, step: str) -> list[float]:
+    """Return the temperatures from start to stop, both included where the step meets them. [K]
+
+    Args:
+        start: First temperature, as text with its unit.
+        stop: Last temperature, as text with its unit.
+        step: Temperature difference, as text with its unit.
+    Raises: QuantityError if a text is no such quantity, the step is not above 0 K, the temperatures fall, or
+        there would be more than `MOST_ROWS` rows.
+    """
+    first, last = (parse_quantity(text, "temperature") for text in (start, stop))
+    width = parse_quantity(step, "temperature difference")
+    if width <= 0.0:
+        raise QuantityError(f'step "{step}" is not above 0 K; give for example "1 K"')
+    if last < first:
+        raise QuantityError(f'"{stop}" is below "{start}"; give the lower temperature with --from')
+    count = int((last - first) / width + 1e-9) + 1
+    if count > MOST_ROWS:
+        raise QuantityError(f'"{start}" to "{stop}" by "{step}" makes {count} rows; at most {MOST_ROWS} are printed')
+    return [first + i * width for i in range(count)]
+
+
+def saturation_json(table: SaturationTable) -> dict[str, Any]:
+    """Return a table as the JSON object of the contract; what is not known is None."""
+    return {
+        "schema": "retrofit.saturation/1",
+        "refrigerant": table.refrigerant.designation,
+        "model": {"grade": table.grade.word, "text": table.grade.text},
+        "rows": [asdict(row) for row in table.rows],
+        "cautions": [asdict(caution) for caution in cautions_for(table.refrigerant)],
+    }
+
+
+def saturation_text(table: SaturationTable, units: UnitSystem, columns: int, strong: Callable[[str], str]) -> str:
+    """Return a table as text, with the columns named for what they are used for.
+
+    Args:
+        table: The table.
+        units: The reader's units.
+        columns: Width to wrap prose to. [characters]
+        strong: How a heading is set off.
+    """
+    heading = strong(f"{table.refrigerant.designation}: saturation pressure over temperature")
+    use = "Superheat is counted from the dew column, subcooling from the bubble column; gauge pressures at sea level."
+    grade = f"Grade of the model: {table.grade.text}."
+    cautions = [_caution(item, columns) for item in cautions_for(table.refrigerant)]
+    prose = [paragraph(use, columns), paragraph(grade, columns)]
+    return "\n".join([heading, *cautions, *prose, "", _table(table.rows, units), *_reasons(table.rows, units)])
+
+
+def _caution(caution: Caution, columns: int) -> str:
+    return paragraph(f"{caution.level.upper()}  {caution.title}. {caution.text}", columns, indent="  ", first="")
+
+
+def _table(rows: tuple[SaturationRow, ...], units: UnitSystem) -> str:
+    kinds = (
+        ("Bubble", "pressure", lambda row: row.p_bubble_Pa),
+        ("Bubble", "gauge pressure", lambda row: _gauge(row.p_bubble_Pa)),
+        ("Dew", "pressure", lambda row: row.p_dew_Pa),
+        ("Dew", "gauge pressure", lambda row: _gauge(row.p_dew_Pa)),
+        ("Liquid", "density", lambda row: row.density_bubble_kg_per_m3),
+        ("Vapour", "density", lambda row: row.density_dew_kg_per_m3),
+    )
+    heads = [Column("Temp.", units.label("temperature"))]
+    heads += [Column(title, units.label(kind)) for title, kind, _ in kinds]
+    cells = [units.column("temperature", [row.T_K for row in rows])]
+    cells += [units.column(kind, [value(row) for row in rows]) for _, kind, value in kinds]
+    return text_table(heads, list(zip(*cells, strict=True)))
+
+
+def _gauge(p_Pa: float | None) -> float | None:
+    return None if p_Pa is None else p_Pa - STANDARD_ATMOSPHERE_PA
+
+
+def _reasons(rows: tuple[SaturationRow, ...], units: UnitSystem) -> list[str]:
+    missing = [row for row in rows if row.reason]
+    if not missing:
+        return []
+    return ["", f"{len(missing)} of {len(rows)} rows outside the model's range: {missing[0].reason}."]

@@ -1,0 +1,210 @@
+"""A result as text for a terminal: the answer, the cautions, the two bases, and what stands against whom."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Sequence
+
+from retrofit.checks import LEVELS, Answer, answer, model_band, not_checked
+from retrofit.refrigerants import GWP_BASES, Caution
+from retrofit.report.text_table import Column, paragraph, text_table
+from retrofit.study import Comparison, Entry
+from retrofit.units import UnitSystem, listed, shown
+
+Emphasis = Callable[[str], str]
+INDENT = " " * 9
+NOT_STATED = "not stated"
+CONVENTIONS = {
+    "dew": "equal dew temperatures",
+    "mean": "equal mean temperatures",
+}
+
+
+def comparison_text(comparison: Comparison, units: UnitSystem, columns: int, strong: Emphasis = str) -> str:
+    """Return a result as text.
+
+    Args:
+        comparison: An assessed result.
+        units: The reader's units.
+        columns: Width to wrap prose to. [characters]
+        strong: How a heading is set off; plain if left out.
+    Returns: The text. The cautions stand above the numbers and cannot be left out.
+    """
+    found = answer(comparison, units)
+    parts = [
+        _head(comparison, units, columns, strong),
+        _answer(found, columns),
+        *_cautions(comparison, columns, strong),
+        *_tables(comparison, units, strong),
+        _findings(comparison, columns, strong),
+        _small_print(comparison, columns, strong),
+    ]
+    return "\n\n".join(part for part in parts if part)
+
+
+def _head(comparison: Comparison, units: UnitSystem, columns: int, strong: Emphasis) -> str:
+    duty, plant = comparison.case.duty, comparison.case.plant
+    line = (
+        f"{plant.refrigerant} today: evaporating {units.with_unit('temperature', duty.T_evap_K)}, "
+        f"condensing {units.with_unit('temperature', duty.T_cond_K)} ({duty.reading}), "
+        f"cooling {units.with_unit('cooling', duty.cooling_W)}"
+    )
+    return "\n".join([strong(shown(comparison.case.title, 200)), paragraph(line, columns)])
+
+
+def _answer(found: Answer, columns: int) -> str:
+    lines = [paragraph(found.headline, columns)]
+    for matter in found.matters:
+        lines.append("")
+        lines.append(paragraph(matter.about, columns))
+        lines += [
+            paragraph(f"{words}: {', '.join(names)}", columns, indent="    ", first="  ")
+            for words, names in matter.groups
+        ]
+    for remark in found.remarks:
+        lines += ["", paragraph(remark, columns)]
+    return "\n".join(lines)
+
+
+def _cautions(comparison: Comparison, columns: int, strong: Emphasis) -> list[str]:
+    by_caution: dict[Caution, list[str]] = {}
+    for entry in comparison.entries:
+        for caution in entry.cautions:
+            by_caution.setdefault(caution, []).append(entry.refrigerant.designation)
+    found = [strong("Cautions")]
+    for caution, names in by_caution.items():
+        title = f"{caution.level.upper()}  {caution.title} ({', '.join(names)})"
+        found.append(paragraph(title, columns) + "\n" + paragraph(caution.text, columns, indent="  "))
+    return ["\n".join([found[0], *found[1:]])]
+
+
+def _tables(comparison: Comparison, units: UnitSystem, strong: Emphasis) -> list[str]:
+    solved = [entry for entry in comparison.entries if entry.duty is not None]
+    tables = [_refrigerants(comparison.entries, strong)]
+    if solved:
+        tables = [_duty(comparison, solved, units, strong), _compressor(comparison, solved, units, strong), *tables]
+    return tables
+
+
+def convention(comparison: Comparison) -> str:
+    """Return how candidates are matched and what the existing temperatures are, for a heading."""
+    case = comparison.case
+    return f"candidates matched at {CONVENTIONS[case.compare.match]}; today's temperatures read as {case.duty.reading}"
+
+
+def _names(entries: Sequence[Entry]) -> list[str]:
+    return [f"{entry.refrigerant.designation}{' (today)' if entry.family == 'keep' else ''}" for entry in entries]
+
+
+def _duty(comparison: Comparison, solved: Sequence[Entry], units: UnitSystem, strong: Emphasis) -> str:
+    cooling = units.with_unit("cooling", comparison.case.duty.cooling_W)
+    heading = strong(f"Same duty, {cooling}: displacement and power follow") + f"\n{convention(comparison)}"
+    kinds = (
+        ("Evap.", "pressure", "p_evap_Pa"),
+        ("Cond.", "pressure", "p_cond_Pa"),
+        ("Ratio", "ratio", "pressure_ratio"),
+        ("Discharge", "temperature", "T_discharge_K"),
+        ("Power", "power", "power_W"),
+        ("COP", "ratio", "cop"),
+        ("Flow", "mass flow", "mass_flow_kg_per_s"),
+        ("Swept", "volume flow", "swept_volume_m3_per_s"),
+        ("Glide", "temperature difference", "glide_evap_K"),
+    )
+    columns = [
+        Column("", "", is_words=True),
+        *(Column(title, units.label(kind)) for title, kind, _ in kinds),
+        Column("COP vs", "today"),
+    ]
+    cells = [units.column(kind, [getattr(entry.duty, name) for entry in solved]) for _, kind, name in kinds]
+    ratios = [_change(entry, "cop") for entry in solved]
+    rows = [list(row) for row in zip(_names(solved), *cells, ratios, strict=True)]
+    return f"{heading}\n{text_table(columns, rows)}"
+
+
+def _compressor(comparison: Comparison, solved: Sequence[Entry], units: UnitSystem, strong: Emphasis) -> str:
+    swept = units.with_unit("volume flow", comparison.swept_volume_m3_per_s)
+    origin = "" if comparison.swept_volume_from == "case" else "; swept volume not in the case: what today's duty needs"
+    heading = strong(f"Same compressor, {swept}: cooling and power follow") + f"\n{convention(comparison)}{origin}"
+    kinds = (
+        ("Cooling", "cooling", "cooling_W"),
+        ("Power", "power", "power_W"),
+        ("Heat out", "heat flow", "heat_rejected_W"),
+        ("Flow", "mass flow", "mass_flow_kg_per_s"),
+    )
+    columns = [
+        Column("", "", is_words=True),
+        *(Column(title, units.label(kind)) for title, kind, _ in kinds),
+        Column("Cooling vs", "today"),
+        Column("Power vs", "today"),
+    ]
+    cells = [units.column(kind, [getattr(entry.compressor, name) for entry in solved]) for _, kind, name in kinds]
+    ratios = [[_change(entry, name) for entry in solved] for name in ("capacity", "power")]
+    rows = [list(row) for row in zip(_names(solved), *cells, *ratios, strict=True)]
+    return f"{heading}\n{text_table(columns, rows)}"
+
+
+def _change(entry: Entry, ratio: str) -> str:
+    if entry.family == "keep" or ratio not in entry.relative:
+        return "·"
+    return f"{entry.relative[ratio] - 1.0:+.1%}".replace("-", "−").replace("%", " %")
+
+
+def _refrigerants(entries: Sequence[Entry], strong: Emphasis) -> str:
+    columns = [
+        Column("", "", is_words=True),
+        Column("Class", "", is_words=True),
+        *(Column("GWP", label) for label in ("AR4", "AR5", "AR6")),
+        Column("Model", "", is_words=True),
+        Column("Verdict", "", is_words=True),
+    ]
+    rows = [
+        [
+            name,
+            entry.refrigerant.safety_class.text or NOT_STATED,
+            *(gwp_text(entry, basis) for basis in list(GWP_BASES)[:3]),
+            entry.grade.word if entry.grade else "none",
+            entry.verdict,
+        ]
+        for name, entry in zip(_names(entries), entries, strict=True)
+    ]
+    heading = strong("Refrigerants: ASHRAE 34 class, GWP over 100 years by IPCC edition, grade of the model")
+    return f"{heading}\n{text_table(columns, rows)}"
+
+
+def gwp_text(entry: Entry, basis: str) -> str:
+    """Return the GWP of a refrigerant on one basis as a whole number, or "not stated"."""
+    value = getattr(entry.refrigerant, basis).number
+    if value is None:
+        return NOT_STATED
+    return f"{value:.0f}" if value >= 10.0 else f"{value:.2g}"
+
+
+def _findings(comparison: Comparison, columns: int, strong: Emphasis) -> str:
+    """Return the findings, worst first, each with the refrigerants it was found in."""
+    groups: dict[tuple[str, str, str, str], list[str]] = {}
+    for entry in comparison.entries:
+        for finding in entry.findings:
+            key = (finding.level, finding.code, finding.title, finding.advice)
+            fact = f"{entry.refrigerant.designation}: {finding.fact}" if finding.fact else entry.refrigerant.designation
+            groups.setdefault(key, []).append(fact)
+    lines = [strong("What the checks found")]
+    for (level, _, title, advice), facts in sorted(groups.items(), key=lambda item: LEVELS.index(item[0][0])):
+        if not any(": " in fact for fact in facts):
+            facts = [", ".join(facts)]
+        lines.append(paragraph(f"{title}. {advice}".strip(), columns, indent=INDENT, first=f"{level:<9}"))
+        lines += [paragraph(fact, columns, indent=INDENT + "    ", first=INDENT + "  ") for fact in facts]
+    return "\n".join(lines)
+
+
+def _small_print(comparison: Comparison, columns: int, strong: Emphasis) -> str:
+    bands = model_band()
+    case = comparison.case
+    assumed = [f"{item.key} = {item.shown_text}" for item in case.defaults]
+    parts = [
+        f"Accuracy: capacity ±{bands['capacity'].value:.0%}, COP ±{bands['cop'].value:.0%}, discharge "
+        f"±{bands['T_discharge'].value:.0f} K, pressures ±{bands['pressure'].value:.0%}; a difference inside the band "
+        "means nothing.",
+        f"Assumed, not in the case: {listed(assumed, 'and')}." if assumed else "",
+        "Not checked: " + "; ".join(not_checked()) + ".",
+        "Versions: " + ", ".join(f"{name} {number}" for name, number in comparison.versions.items()) + ".",
+    ]
+    return "\n".join([strong("Limits"), *(paragraph(part, columns) for part in parts if part)])
