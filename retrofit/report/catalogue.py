@@ -16,8 +16,8 @@ FIELDS = (
     ("composition_mass_pct", "Composition, mass %", "{}"),
     ("tolerances_mass_pct", "Tolerances, mass %", "{}"),
     ("molar_mass_kg_per_mol", "Molar mass, g/mol", "{:.3f}"),
-    ("bubble_1atm_K", "Bubble point at 1 atm, °C", "{:.2f}"),
-    ("dew_1atm_K", "Dew point at 1 atm, °C", "{:.2f}"),
+    ("bubble_1atm_K", "Bubble point at 1 atm, °C", "{:.5g}"),
+    ("dew_1atm_K", "Dew point at 1 atm, °C", "{:.5g}"),
     ("lfl_kg_per_m3", "Lower flammability limit, kg/m³", "{:g}"),
     ("lfl_vol_pct", "Lower flammability limit, vol %", "{:.1f}"),
     ("rcl_ppm", "RCL, ppm", "{:.0f}"),
@@ -27,7 +27,7 @@ FIELDS = (
     ("atel_odl_kg_per_m3", "ATEL/ODL, kg/m³", "{:g}"),
     ("autoignition_K", "Autoignition temperature, °C", "{:.0f}"),
     ("odp", "ODP", "{:g}"),
-    *((basis, f"GWP, {label}", "{:.4g}") for basis, label in GWP_BASES.items()),
+    *((basis, f"GWP, {label}", "") for basis, label in GWP_BASES.items()),
     ("lubricants", "Usual lubricants", "{}"),
     ("typical_use", "Typical use", "{}"),
 )
@@ -118,19 +118,23 @@ def _list_row(item: Refrigerant) -> list[str]:
     return [
         item.designation,
         item.safety_class.text or NOT_STATED,
-        *(_number(getattr(item, basis), "{:.4g}") for basis in list(GWP_BASES)[:3]),
-        _celsius(item.bubble_1atm_K, "{:.1f}"),
-        _celsius(item.dew_1atm_K, "{:.1f}"),
+        *(gwp_text(getattr(item, basis)) for basis in list(GWP_BASES)[:3]),
+        _celsius(item.bubble_1atm_K),
+        _celsius(item.dew_1atm_K),
         composition,
     ]
 
 
-def _number(value: Value, form: str) -> str:
-    return "–" if value.number is None else form.format(value.number).replace("-", "−")
+def gwp_text(value: Value) -> str:
+    """Return a GWP as a whole number, a small one with two digits, or "not stated"."""
+    if value.number is None:
+        return NOT_STATED
+    return f"{value.number:.0f}" if value.number >= 10.0 else f"{value.number:.2g}"
 
 
-def _celsius(value: Value, form: str) -> str:
-    return "–" if value.number is None else form.format(value.number - KELVIN).replace("-", "−")
+def _celsius(value: Value) -> str:
+    """Return a boiling point with the digits its source prints."""
+    return "–" if value.number is None else f"{round(value.number - KELVIN, 2):g}".replace("-", "−")
 
 
 def refrigerant_text(item: Refrigerant, columns: int, strong: Callable[[str], str]) -> str:
@@ -166,7 +170,7 @@ def _detail_row(label: str, value: Value, form: str) -> list[str]:
     elif value.number is not None:
         in_celsius = "°C" in label
         number = value.number - KELVIN if in_celsius else value.number * (1e3 if "g/mol" in label else 1.0)
-        shown = form.format(number).replace("-", "−")
+        shown = form.format(number).replace("-", "−") if form else gwp_text(value)
         shown += f" ({value.status})" if value.status else ""
     else:
         shown = value.text

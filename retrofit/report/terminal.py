@@ -6,6 +6,7 @@ from collections.abc import Callable, Sequence
 
 from retrofit.checks import LEVELS, Answer, answer, model_band, not_checked
 from retrofit.refrigerants import GWP_BASES, Caution
+from retrofit.report.catalogue import gwp_text
 from retrofit.report.text_table import Column, paragraph, text_table
 from retrofit.study import Comparison, Entry
 from retrofit.units import UnitSystem, listed, shown
@@ -160,7 +161,7 @@ def _refrigerants(entries: Sequence[Entry], strong: Emphasis) -> str:
         [
             name,
             entry.refrigerant.safety_class.text or NOT_STATED,
-            *(gwp_text(entry, basis) for basis in list(GWP_BASES)[:3]),
+            *(gwp_text(getattr(entry.refrigerant, basis)) for basis in list(GWP_BASES)[:3]),
             entry.grade.word if entry.grade else "none",
             entry.verdict,
         ]
@@ -168,14 +169,6 @@ def _refrigerants(entries: Sequence[Entry], strong: Emphasis) -> str:
     ]
     heading = strong("Refrigerants: ASHRAE 34 class, GWP over 100 years by IPCC edition, grade of the model")
     return f"{heading}\n{text_table(columns, rows)}"
-
-
-def gwp_text(entry: Entry, basis: str) -> str:
-    """Return the GWP of a refrigerant on one basis as a whole number, or "not stated"."""
-    value = getattr(entry.refrigerant, basis).number
-    if value is None:
-        return NOT_STATED
-    return f"{value:.0f}" if value >= 10.0 else f"{value:.2g}"
 
 
 def _findings(comparison: Comparison, columns: int, strong: Emphasis) -> str:
