@@ -105,9 +105,9 @@ def catalogue_text(refrigerants: Iterable[Refrigerant], strong: Callable[[str], 
     rows = [_list_row(item) for item in refrigerants]
     heading = strong("Catalogue: ASHRAE 34 class, GWP over 100 years by IPCC edition, boiling points at 1 atm")
     note = (
-        "A class or value may be from memory or in dispute: retrofit refrigerants NAME shows source, basis and\n"
-        "cautions of each. Nothing here replaces ASHRAE 34 and 15, ISO 817 and 5149 or EN 378, local code and\n"
-        "licensed practice."
+        f"{MARK_MEANS}.\n"
+        "retrofit refrigerants NAME shows source, basis, disputes and cautions of each. Nothing here\n"
+        "replaces ASHRAE 34 and 15, ISO 817 and 5149 or EN 378, local code and licensed practice."
     )
     return f"{heading}\n{text_table(heads, rows)}\n\n{note}"
 
@@ -117,24 +117,40 @@ def _list_row(item: Refrigerant) -> list[str]:
     composition = f"{'/'.join(names)} {'/'.join(f'{100 * share:.4g}' for share in shares)}" if len(names) > 1 else ""
     return [
         item.designation,
-        item.safety_class.text or NOT_STATED,
+        class_text(item),
         *(gwp_text(getattr(item, basis)) for basis in list(GWP_BASES)[:3]),
         _celsius(item.bubble_1atm_K),
         _celsius(item.dew_1atm_K),
-        composition,
+        marked(composition, item.composition_mass_pct) if composition else "",
     ]
 
 
+MARK = "*"
+MARK_MEANS = f"{MARK} from memory, in dispute, or with a component that has no value counted as 0"
+
+
+def marked(text: str, value: Value) -> str:
+    """Return a text with a mark where the value behind it must not be taken for read."""
+    return text + MARK if value.basis == "memory" or value.status in ("incomplete", "unresolved") else text
+
+
+def class_text(item: Refrigerant) -> str:
+    """Return the safety class, marked if it is from memory, or "not stated"."""
+    return marked(item.safety_class.text, item.safety_class) if item.safety_class.text else NOT_STATED
+
+
 def gwp_text(value: Value) -> str:
-    """Return a GWP as a whole number, a small one with two digits, or "not stated"."""
+    """Return a GWP as a whole number, a small one with two digits, marked where due, or "not stated"."""
     if value.number is None:
         return NOT_STATED
-    return f"{value.number:.0f}" if value.number >= 10.0 else f"{value.number:.2g}"
+    return marked(f"{value.number:.0f}" if value.number >= 10.0 else f"{value.number:.2g}", value)
 
 
 def _celsius(value: Value) -> str:
     """Return a boiling point with the digits its source prints."""
-    return "–" if value.number is None else f"{round(value.number - KELVIN, 2):g}".replace("-", "−")
+    if value.number is None:
+        return "–"
+    return marked(f"{round(value.number - KELVIN, 2):g}".replace("-", "−"), value)
 
 
 def refrigerant_text(item: Refrigerant, columns: int, strong: Callable[[str], str]) -> str:

@@ -6,14 +6,13 @@ from collections.abc import Callable, Sequence
 
 from retrofit.checks import LEVELS, Answer, answer, model_band, not_checked
 from retrofit.refrigerants import GWP_BASES, Caution
-from retrofit.report.catalogue import gwp_text
+from retrofit.report.catalogue import MARK, MARK_MEANS, class_text, gwp_text
 from retrofit.report.text_table import Column, paragraph, text_table
 from retrofit.study import Comparison, Entry
 from retrofit.units import UnitSystem, listed, shown
 
 Emphasis = Callable[[str], str]
 INDENT = " " * 9
-NOT_STATED = "not stated"
 CONVENTIONS = {
     "dew": "equal dew temperatures",
     "mean": "equal mean temperatures",
@@ -160,7 +159,7 @@ def _refrigerants(entries: Sequence[Entry], strong: Emphasis) -> str:
     rows = [
         [
             name,
-            entry.refrigerant.safety_class.text or NOT_STATED,
+            class_text(entry.refrigerant),
             *(gwp_text(getattr(entry.refrigerant, basis)) for basis in list(GWP_BASES)[:3]),
             entry.grade.word if entry.grade else "none",
             entry.verdict,
@@ -168,7 +167,8 @@ def _refrigerants(entries: Sequence[Entry], strong: Emphasis) -> str:
         for name, entry in zip(_names(entries), entries, strict=True)
     ]
     heading = strong("Refrigerants: ASHRAE 34 class, GWP over 100 years by IPCC edition, grade of the model")
-    return f"{heading}\n{text_table(columns, rows)}"
+    table = text_table(columns, rows)
+    return f"{heading}\n{table}" + (f"\n{MARK_MEANS}" if MARK in table else "")
 
 
 def _findings(comparison: Comparison, columns: int, strong: Emphasis) -> str:
