@@ -48,11 +48,8 @@ def grade(fluid: Fluid, refrigerant: Refrigerant) -> Grade:
     """
     bubble = _difference(fluid, refrigerant.bubble_1atm_K, dew=False)
     dew = _difference(fluid, refrigerant.dew_1atm_K, dew=True)
-    known = [
-        max(0.0, abs(difference) - _rounding(value))
-        for difference, value in ((bubble, refrigerant.bubble_1atm_K), (dew, refrigerant.dew_1atm_K))
-        if difference is not None
-    ]
+    rounding = _rounding(refrigerant.bubble_1atm_K, refrigerant.dew_1atm_K)
+    known = [max(0.0, abs(difference) - rounding) for difference in (bubble, dew) if difference is not None]
     word = _word(max(known)) if known else "not checked"
     if fluid.estimated_pairs and word == "close":
         word = "fair"
@@ -69,10 +66,10 @@ def _difference(fluid: Fluid, published: Value, *, dew: bool) -> float | None:
     return float(state.T_K) - published.number
 
 
-def _rounding(published: Value) -> float:
-    """Return half a unit of the last digit printed: tables give whole degrees for single substances."""
-    celsius = (published.number or 0.0) - KELVIN
-    return 0.5 if abs(celsius - round(celsius)) < 1e-6 else 0.05
+def _rounding(*published: Value) -> float:
+    """Return half a unit of the last digit printed: whole degrees only where every one of the points is whole."""
+    celsius = [value.number - KELVIN for value in published if value.number is not None]
+    return 0.5 if all(abs(point - round(point)) < 1e-6 for point in celsius) else 0.05
 
 
 def _word(difference: float) -> str:
