@@ -2,8 +2,8 @@
 
 A file is a first line that names the format, a digest of everything after it, and the arrays. Its name
 carries a key of everything the tables depend on: the composition, the version of the property library and
-the version of this format. So another version never meets it, and a file that was cut short, changed or
-made by something else does not match its digest and is built again.
+the version of this format. The digest is keyed with it too. So another version never meets a file, and one
+that was cut short, changed, renamed or made by something else does not match its digest and is built again.
 """
 
 from __future__ import annotations
@@ -26,7 +26,7 @@ from retrofit.properties.components import Mixture
 from retrofit.properties.fluid import Fluid
 from retrofit.properties.table import Tables
 
-FORMAT = 2  # raise it when anything about the tables or how they are made changes
+FORMAT = 3  # raise it when anything about the tables or how they are made changes
 MAGIC = b"retrofit tables\n"
 FOLDER_VARIABLE = "RETROFIT_STORE"
 STALE_SECONDS = 3600.0
@@ -76,7 +76,7 @@ def read_fluid(mixture: Mixture, folder: Path) -> Fluid | None:
         content[len(MAGIC) : len(MAGIC) + 32],
         content[len(MAGIC) + 32 :],
     )
-    if magic != MAGIC or digest != _digest(payload):
+    if magic != MAGIC or digest != _digest(mixture, payload):
         return None
     with np.load(io.BytesIO(payload), allow_pickle=False) as arrays:
         found = {name: arrays[name] for name in arrays.files}
@@ -99,14 +99,14 @@ def write_fluid(mixture: Mixture, fluid: Fluid, folder: Path) -> bool:
     try:
         folder.mkdir(parents=True, exist_ok=True)
         _sweep(folder)
-        _write_whole(store_path(mixture, folder), MAGIC + _digest(payload) + payload)
+        _write_whole(store_path(mixture, folder), MAGIC + _digest(mixture, payload) + payload)
     except OSError:
         return False
     return True
 
 
-def _digest(payload: bytes) -> bytes:
-    return hashlib.blake2b(payload, digest_size=32).digest()
+def _digest(mixture: Mixture, payload: bytes) -> bytes:
+    return hashlib.blake2b(payload, digest_size=32, key=store_key(mixture).encode()).digest()
 
 
 def _write_whole(path: Path, content: bytes) -> None:
