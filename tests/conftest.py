@@ -1,8 +1,12 @@
-"""What every test shares: a store of tables of this session's own, so that each refrigerant is built once."""
+"""What every test shares: a store of tables of this session's own, so that each refrigerant is built once,
+and cases without files."""
 
 import os
 
 import pytest
+
+from retrofit.case import Case
+from retrofit.case.model import CaseFile
 
 STORE = "RETROFIT_STORE"
 
@@ -19,3 +23,23 @@ def session_store(tmp_path_factory):
     os.environ[STORE] = str(folder)
     yield str(folder)
     del os.environ[STORE]
+
+
+@pytest.fixture(scope="session")
+def case_of():
+    """Return a function that makes a case from the text a user would write, without a file."""
+    return _case_of
+
+
+def _case_of(existing="R404A", candidates=("R448A", "R449A"), *, plant=(), duty=(), compressor=(), **compare):
+    """Return a case; each table takes keys and texts of the case file, on top of an ordinary plant."""
+    tables = {
+        "title": "A plant",
+        "plant": {"refrigerant": existing, **dict(plant)},
+        "duty": {"cooling": "120 kW", "evaporating": "-8 degC", "condensing": "42 degC", **dict(duty)},
+        "compressor": dict(compressor),
+        "compare": {"candidates": list(candidates), **compare},
+    }
+    read = CaseFile.model_validate(tables)
+    parts = {name: getattr(read, name) for name in ("plant", "duty", "compressor", "compare")}
+    return Case(title="A plant", about=None, **parts, path="plant.toml", text="", given={}, defaults=())
