@@ -1,0 +1,222 @@
+"""Pressure-enthalpy charts: the cycles on shared axes, and each refrigerant by itself with numbered points."""
+
+from __future__ import annotations
+
+from typing import Any
+
+import numpy as np
+
+from retrofit.figures.drawing import Drawing, canvas, to_svg
+from retrofit.figures.scales import enthalpies, limit_line, log_ticks, temperature_ticks
+from retrofit.figures.style import HAIRLINE, INK, LABEL_PT, THIN, mark_of
+from retrofit.study import ChartLines, Comparison, Entry
+from retrofit.units import UnitSystem
+
+TOGETHER = 6  # candidates in one chart; more are spread over several
+
+
+def overlay_charts(comparison: Comparison, units: UnitSystem) -> tuple[Drawing, ...]:
+    """Draw the cycle of the existing refrigerant with those of the candidates, on the same axes.
+
+    Args:
+        comparison: The result.
+        units: The reader's units.
+    Returns: One chart for up to six candidates, else several with the same axes; none if nothing was computed.
+    """
+    solved = [(place, entry) for place, entry in enumerate(comparison.entries) if entry.lines is not None]
+    if not solved:
+        return ()
+    existing, candidates = solved[:1], solved[1:]
+    if existing[0][0] != 0:
+        existing, candidates = [], solved
+    count = max(1, -(-len(candidates) // TOGETHER))
+    share = -(-len(candidates) // count) if candidates else 1
+    groups = [existing + candidates[i * share : (i + 1) * share] for i in range(count)]
+    box = _limits([entry for _, entry in solved], units)
+    return tuple(_overlay(comparison, group, units, box, i) for i, group in enumerate(groups))
+
+
+def _overlay(
+    comparison: Comparison,
+    group: list[tuple[int, Entry]],
+    units: UnitSystem,
+    box: tuple[tuple[float, float], tuple[float, float]],
+    number: int,
+) -> Drawing:
+    names = ", ".join(entry.refrigerant.display_name for _, entry in group)
+    with canvas(4.6) as figure:
+        axes = _axes(figure, units, box)
+        for place, entry in group:
+            mark = mark_of(place)
+            assert entry.lines is not None
+            _dome(axes, entry.lines, units, mark.colour, HAIRLINE if place else THIN)
+            h, p = _closed(entry, units)
+            axes.plot(h, p, color=mark.colour, linestyle=mark.dash, linewidth=mark.width)
+            axes.plot(h[:8], p[:8], mark.marker, color=mark.colour, markersize=3.6)
+        limit = limit_line(axes, comparison, units, box)
+        if group[0][0] == 0:
+            assert group[0][1].lines is not None
+            temperature_ticks(axes, group[0][1].lines, units, _pressures(group[0][1], units), limit)
+        _end_labels(axes, group, units)
+        name = f"overlay-{number + 1}"
+        title = f"Pressure-enthalpy chart with the cycles of {names}"
+        described = "; ".join(_cycle_words(entry, units) for _, entry in group)
+        svg = to_svg(figure, name, title, described)
+    caption = (
+        f"Cycles of {names} on the same axes, pressure on a logarithmic scale. The thick black cycle is today's"
+        if group[0][0] == 0
+        else f"Cycles of {names} on the same axes, pressure on a logarithmic scale"
+    )
+    return Drawing(name, svg, caption + ".", described)
+
+
+def cycle_chart(comparison: Comparison, place: int, units: UnitSystem) -> Drawing | None:
+    """Draw the cycle of one refrigerant with the numbers of its state table.
+
+    Args:
+        comparison: The result.
+        place: 0 for the existing refrigerant, then the candidates in order. [-]
+        units: The reader's units.
+    Returns: The chart, None if the refrigerant was not computed.
+    """
+    entry = comparison.entries[place]
+    if entry.lines is None:
+        return None
+    mark, label, box = mark_of(place), entry.refrigerant.display_name, _limits([entry], units)
+    with canvas(3.4) as figure:
+        axes = _axes(figure, units, box)
+        _dome(axes, entry.lines, units, mark.colour, THIN)
+        h, p = _closed(entry, units)
+        axes.plot(h, p, color=mark.colour, linewidth=mark.width)
+        axes.plot(h[:8], p[:8], mark.marker, color=mark.colour, markersize=4.2)
+        limit = limit_line(axes, comparison, units, box)
+        temperature_ticks(axes, entry.lines, units, _pressures(entry, units), limit)
+        _number_points(axes, h, p)
+        name, described = f"cycle-{place}", _cycle_words(entry, units)
+        svg = to_svg(figure, name, f"Pressure-enthalpy chart of {label} with its cycle", described)
+    caption = (
+        f"{label}: saturation lines with their temperatures in {units.label('temperature')} "
+        f"(bubble line on the left, dew line on the right), and the cycle with the point numbers of the table."
+    )
+    return Drawing(name, svg, caption, described)
+
+
+def _axes(figure: Any, units: UnitSystem, box: tuple[tuple[float, float], tuple[float, float]]) -> Any:
+    axes = figure.subplots()
+    axes.set_yscale("log")
+    axes.set_xlim(*box[0])
+    axes.set_ylim(*box[1])
+    axes.set_xlabel(f"Specific enthalpy [{units.label('specific enthalpy')}]")
+    axes.set_ylabel(f"Pressure, absolute [{units.label('pressure')}]")
+    log_ticks(axes, box[1])
+    axes.grid(axis="y", linewidth=HAIRLINE, alpha=0.18, color=INK)
+    return axes
+
+
+def _limits(entries: list[Entry], units: UnitSystem) -> tuple[tuple[float, float], tuple[float, float]]:
+    """Return the limits of both axes: all cycles, their condensing side up to the critical points."""
+    lowest = min(point.p_Pa for entry in entries for point in entry.points) / 1.7
+    highest = max(entry.lines.p_critical_Pa for entry in entries if entry.lines) * 1.3
+    highest = max(highest, max(point.p_Pa for entry in entries for point in entry.points) * 1.3)
+    left, right = [], []
+    for entry in entries:
+        lines, h = entry.lines, _closed(entry, units)[0]
+        assert lines is not None
+        left.append(float(np.interp(lowest, lines.p_bubble_Pa, enthalpies(lines, lines.h_bubble_J_per_kg, units))))
+        right += [max(h), float(np.max(enthalpies(lines, lines.h_dew_J_per_kg, units)))]
+    width = max(right) - min(left)
+    h_limits = (min(left) - 0.07 * width, max(right) + 0.04 * width)
+    return h_limits, (float(units.number("pressure", lowest)), float(units.number("pressure", highest)))
+
+
+def _closed(entry: Entry, units: UnitSystem) -> tuple[list[float], list[float]]:
+    assert entry.lines is not None
+    h = [float(enthalpies(entry.lines, point.h_J_per_kg, units)) for point in entry.points]
+    p = [float(units.number("pressure", point.p_Pa)) for point in entry.points]
+    return [*h, h[0]], [*p, p[0]]
+
+
+def _pressures(entry: Entry, units: UnitSystem) -> list[float]:
+    return sorted({float(units.number("pressure", point.p_Pa)) for point in entry.points})
+
+
+def _dome(axes: Any, lines: ChartLines, units: UnitSystem, colour: str, width: float) -> None:
+    for h, p in ((lines.h_bubble_J_per_kg, lines.p_bubble_Pa), (lines.h_dew_J_per_kg, lines.p_dew_Pa)):
+        axes.plot(enthalpies(lines, h, units), units.number("pressure", p), color=colour, linewidth=width)
+
+
+def _number_points(axes: Any, h: list[float], p: list[float]) -> None:
+    """Write the number of each point beside it, clear of the saturation lines; close points share one label."""
+    width = axes.get_xlim()[1] - axes.get_xlim()[0]
+    for level in sorted(set(p)):
+        on_top = level == max(p)
+        here = sorted((h[i], i + 1) for i in range(len(h) - 1) if p[i] == level)
+        clusters = _clusters(here, 0.028 * width)
+        for place, cluster in enumerate(clusters):
+            alone = place == (len(clusters) - 1 if on_top else 0)  # discharge or evaporator inlet: no line there
+            anchor, shift = ("center", 0) if alone else ("right", -4) if on_top else ("left", 3)
+            x = cluster[-1][0] if on_top else cluster[0][0]
+            text = ", ".join(str(number) for _, number in cluster)
+            axes.annotate(
+                text, (x, level), (shift, 6 if on_top else -6), textcoords="offset points",
+                ha=anchor, va="bottom" if on_top else "top", weight="bold",
+            )  # fmt: skip
+
+
+def _clusters(items: list[tuple[float, int]], near: float) -> list[list[tuple[float, int]]]:
+    """Return sorted items in groups whose neighbours lie nearer than a distance."""
+    clusters: list[list[tuple[float, int]]] = []
+    for item in items:
+        if clusters and item[0] - clusters[-1][-1][0] < near:
+            clusters[-1].append(item)
+        else:
+            clusters.append([item])
+    return clusters
+
+
+def _end_labels(axes: Any, group: list[tuple[int, Entry]], units: UnitSystem) -> None:
+    """Name each cycle in the margin, with a hairline to its discharge point; spread so that no two touch."""
+    ends = []
+    for place, entry in group:
+        h, p = _closed(entry, units)
+        ends.append((p[1], h[1], place, entry.refrigerant.display_name))
+    ends.sort(key=lambda end: (-end[0], end[1]))
+    low, high = (np.log(value) for value in axes.get_ylim())
+    wanted = [(np.log(p) - low) / (high - low) for p, *_ in ends]
+    heights = _spread(wanted, 0.055)
+    for (p, h, place, label), height in zip(ends, heights, strict=True):
+        mark = mark_of(place)
+        axes.annotate(
+            label,
+            (h, p),
+            (1.03, height),
+            textcoords="axes fraction",
+            va="center",
+            ha="left",
+            fontsize=LABEL_PT,
+            weight="bold" if place == 0 else "normal",
+            annotation_clip=False,
+            arrowprops={"arrowstyle": "-", "linewidth": HAIRLINE, "color": mark.colour, "shrinkA": 1, "shrinkB": 3},
+        )
+        axes.plot(
+            [1.015], [height], mark.marker, color=mark.colour, markersize=5, transform=axes.transAxes, clip_on=False
+        )
+
+
+def _spread(wanted: list[float], least: float) -> list[float]:
+    """Return heights, falling, at least `least` apart and centred on the wanted ones."""
+    heights: list[float] = []
+    for value in wanted:
+        heights.append(min(value, heights[-1] - least) if heights else value)
+    if not heights:
+        return heights
+    shift = (sum(wanted) - sum(heights)) / len(heights)
+    shift = max(0.02 - heights[-1], min(shift, 0.99 - heights[0]))
+    return [height + shift for height in heights]
+
+
+def _cycle_words(entry: Entry, units: UnitSystem) -> str:
+    assert entry.duty is not None
+    low, high = (units.with_unit("pressure", p) for p in (entry.duty.p_evap_Pa, entry.duty.p_cond_Pa))
+    discharge = units.with_unit("temperature", entry.duty.T_discharge_K)
+    return f"{entry.refrigerant.display_name}: from {low} to {high}, discharge at {discharge}"

@@ -1,0 +1,206 @@
+"""Charts with one row for each refrigerant: pressures, discharge temperature, COP and capacity against today."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from typing import Any
+
+from retrofit.checks import model_band, threshold
+from retrofit.figures.drawing import Drawing, canvas, to_svg
+from retrofit.figures.style import HAIRLINE, INK, LABEL_PT, SMALL_PT, THIN, mark_of
+from retrofit.study import Comparison, Entry
+from retrofit.units import UnitSystem, format_number
+
+KELVIN = 273.15
+ROW_IN, FRAME_IN = 0.235, 0.85
+
+
+def pressure_chart(comparison: Comparison, units: UnitSystem) -> Drawing:
+    """Draw evaporating and condensing pressure of each refrigerant, as a gauge at the plant shows them.
+
+    Args:
+        comparison: The result.
+        units: The reader's units.
+    Returns: The chart, with the nameplate pressure if the case gives it.
+    """
+    plant, label = comparison.case.plant, units.label("gauge pressure")
+
+    def gauge(p_Pa: float) -> float:
+        return float(units.number("gauge pressure", p_Pa - plant.ambient_pressure_Pa))
+
+    with canvas(_height(comparison)) as figure:
+        axes = figure.subplots()
+        for place, entry in _rows(axes, comparison):
+            if entry.duty is None:
+                continue
+            mark, ends = mark_of(place), (gauge(entry.duty.p_evap_Pa), gauge(entry.duty.p_cond_Pa))
+            axes.plot(ends, (place, place), color=mark.colour, linewidth=mark.width * 0.7)
+            axes.plot(ends, (place, place), mark.marker, color=mark.colour, markersize=5.5, linestyle="none")
+            _value(axes, ends[0], place, _short(ends[0]), -1)
+            _margin_value(axes, place, f"{_short(ends[1])}")
+        values = [gauge(p) for entry in _solved(comparison) for p in (entry.duty.p_evap_Pa, entry.duty.p_cond_Pa)]
+        if plant.high_side_limit_Pa is not None:
+            limit = gauge(plant.high_side_limit_Pa)
+            values.append(limit)
+            _limit(axes, limit, f"nameplate {_short(limit)}", "center")
+        axes.axvline(0.0, color=INK, linewidth=HAIRLINE)
+        _wide(axes, values, 0.12)
+        axes.set_xlabel(f"Evaporating (left) and condensing (right) pressure, gauge [{label}]")
+        words = _words(comparison, lambda e: f"{_short(gauge(e.duty.p_evap_Pa))} and {_short(gauge(e.duty.p_cond_Pa))}")
+        svg = to_svg(figure, "pressures", "Evaporating and condensing pressures", f"In {label}: {words}")
+    caption = "Evaporating and condensing pressure as a gauge at the plant shows them"
+    caption += ", with the maximum pressure of the nameplate." if plant.high_side_limit_Pa is not None else "."
+    return Drawing("pressures", svg, caption, words)
+
+
+def discharge_chart(comparison: Comparison, units: UnitSystem) -> Drawing:
+    """Draw the discharge temperature of each refrigerant with the band of the model and the levels of the checks.
+
+    Args:
+        comparison: The result.
+        units: The reader's units.
+    Returns: The chart.
+    """
+    band, limits = model_band()["T_discharge"].value, threshold("discharge_temperature")
+    solved = _solved(comparison)
+
+    def number(T_K: float) -> float:
+        return float(units.number("temperature", T_K))
+
+    with canvas(_height(comparison)) as figure:
+        axes = figure.subplots()
+        values = [number(entry.duty.T_discharge_K + sign * band) for entry in solved for sign in (-1, 1)]
+        for level, side in ((limits.work, "right"), (limits.stop, "left")):
+            if level is not None:
+                values.append(number(level + KELVIN))
+                word = "ask the maker above" if side == "right" else "stop above"
+                _limit(axes, values[-1], f"{word} {number(level + KELVIN):.0f}", side)
+        if comparison.existing.duty is not None:
+            axes.axvline(number(comparison.existing.duty.T_discharge_K), color=INK, linewidth=HAIRLINE)
+        for place, entry in _rows(axes, comparison):
+            if entry.duty is None:
+                continue
+            mark, T = mark_of(place), entry.duty.T_discharge_K
+            axes.plot((number(T - band), number(T + band)), (place, place), color=mark.colour, linewidth=THIN)
+            axes.plot([number(T)], [place], mark.marker, color=mark.colour, markersize=6)
+            _margin_value(axes, place, f"{number(T):.0f}")
+        _wide(axes, values, 0.06)
+        axes.set_xlabel(f"Discharge temperature [{units.label('temperature')}]")
+        words = _words(comparison, lambda e: f"{number(e.duty.T_discharge_K):.0f}")
+        described = f"In {units.label('temperature')}: {words}"
+        svg = to_svg(figure, "discharge", "Discharge temperatures", described)
+    width = units.with_unit("temperature difference", band, decimals=0)
+    caption = (
+        f"Discharge temperature; the line through each mark is the band of the model, ±{width}. The dashed lines are "
+        "the levels of the checks, not a maker's limits: the maker's written limit goes before them."
+    )
+    return Drawing("discharge", svg, caption, described)
+
+
+def change_chart(comparison: Comparison) -> Drawing:
+    """Draw capacity with the same compressor, and COP, against today, with the band of the model.
+
+    Args:
+        comparison: The result.
+    Returns: The chart; without the existing refrigerant's numbers its rows stay empty.
+    """
+    panels = (
+        ("capacity", model_band()["capacity"].value, "Cooling, same compressor, against today [%]"),
+        ("cop", model_band()["cop"].value, "COP against today [%]"),
+    )
+    with canvas(_height(comparison)) as figure:
+        both = figure.subplots(1, 2, sharey=True)
+        for axes, (name, band, label) in zip(both, panels, strict=True):
+            axes.axvspan(-100 * band, 100 * band, color=INK, alpha=0.09, linewidth=0)
+            axes.axvline(0.0, color=INK, linewidth=THIN)
+            values = [-130 * band, 130 * band]
+            for place, entry in _rows(axes, comparison):
+                if name in entry.relative:
+                    mark, value = mark_of(place), 100 * (entry.relative[name] - 1.0)
+                    values.append(value)
+                    axes.plot([value], [place], mark.marker, color=mark.colour, markersize=6)
+                    _value(axes, value, place, format_number(value, 0, signed=True), -1 if value < 0 else 1)
+            _wide(axes, values, 0.16)
+            axes.set_xlabel(label)
+            axes.xaxis.get_major_locator().set_params(integer=True, nbins=7)
+            text = f"±{100 * band:.0f} %: no meaningful difference"
+            axes.annotate(text, (0.0, 1.0), (0, 3), xycoords=("data", "axes fraction"), textcoords="offset points",
+                          ha="center", va="bottom", fontsize=SMALL_PT)  # fmt: skip
+        words = _words(comparison, _changes)
+        svg = to_svg(figure, "change", "Capacity and COP against today", f"In %, capacity and COP: {words}")
+    caption = (
+        "Cooling with the existing compressor, and COP, against today's refrigerant. Inside the grey band the "
+        "difference is smaller than what the model can tell: no meaningful difference."
+    )
+    return Drawing("change", svg, caption, words)
+
+
+def _changes(entry: Entry) -> str:
+    return " and ".join(
+        format_number(100 * (entry.relative[name] - 1.0), 0, signed=True) if name in entry.relative else "not known"
+        for name in ("capacity", "cop")
+    )
+
+
+def _solved(comparison: Comparison) -> list[Any]:
+    return [entry for entry in comparison.entries if entry.duty is not None]
+
+
+def _height(comparison: Comparison) -> float:
+    return FRAME_IN + ROW_IN * max(3, len(comparison.entries))
+
+
+def _rows(axes: Any, comparison: Comparison) -> list[tuple[int, Entry]]:
+    """Set up one row for each refrigerant, the existing one on top, and return them."""
+    entries = comparison.entries
+    names = [entry.refrigerant.display_name for entry in entries]
+    axes.set_yticks(range(len(entries)), names)
+    for today in axes.get_yticklabels()[:1]:
+        today.set_fontweight("bold")
+    axes.set_ylim(len(entries) - 0.4, -0.6)
+    axes.tick_params(axis="y", length=0)
+    axes.spines["left"].set_visible(False)
+    for place, entry in enumerate(entries):
+        axes.axhline(place, color=INK, linewidth=HAIRLINE, alpha=0.18)
+        if entry.duty is None:
+            axes.annotate("not computed", (0.02, place), xycoords=("axes fraction", "data"), va="center",
+                          fontsize=SMALL_PT, style="italic")  # fmt: skip
+    return list(enumerate(entries))
+
+
+def _value(axes: Any, x: float, y: float, text: str, side: int) -> None:
+    axes.annotate(text, (x, y), (7 * side, 0), textcoords="offset points", va="center",
+                  ha="left" if side > 0 else "right", fontsize=LABEL_PT)  # fmt: skip
+
+
+def _margin_value(axes: Any, y: float, text: str) -> None:
+    """Write a value in the right margin, where no limit line runs through it."""
+    axes.annotate(text, (1.0, y), (28, 0), xycoords=("axes fraction", "data"), textcoords="offset points",
+                  va="center", ha="right", fontsize=LABEL_PT, annotation_clip=False)  # fmt: skip
+
+
+def _limit(axes: Any, x: float, text: str, side: str) -> None:
+    axes.axvline(x, color=INK, linewidth=THIN, linestyle=(0, (3, 2)))
+    shift = {"right": 3, "left": -3, "center": 0}[side]
+    axes.annotate(text, (x, 1.0), (shift, 3), xycoords=("data", "axes fraction"), textcoords="offset points",
+                  ha=side, va="bottom", fontsize=SMALL_PT)  # fmt: skip
+
+
+def _wide(axes: Any, values: Sequence[float], room: float) -> None:
+    """Set the limits of the horizontal axis so that every value and its label has room."""
+    if not values:
+        return
+    low, high = min(values), max(values)
+    margin = room * max(high - low, 1e-6)
+    axes.set_xlim(low - margin, high + margin)
+
+
+def _short(value: float) -> str:
+    return format_number(value, 1 if abs(value) < 100 else 0)
+
+
+def _words(comparison: Comparison, amount: Any) -> str:
+    return "; ".join(
+        f"{entry.refrigerant.display_name} {amount(entry) if entry.duty else 'not computed'}"
+        for entry in comparison.entries
+    )

@@ -1,0 +1,50 @@
+"""The report of a comparison as one HTML file: built, checked for its cautions, and written whole."""
+
+from __future__ import annotations
+
+import os
+from datetime import datetime
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+if TYPE_CHECKING:
+    from retrofit.study import Comparison
+
+
+def render_html(
+    comparison: Comparison, units: str = "si", template_folder: Path | None = None, *, made_at: datetime
+) -> str:
+    """Return the report of a comparison as one HTML page that loads nothing.
+
+    Args:
+        comparison: An assessed result.
+        units: "si" or "ip". [-]
+        template_folder: The reader's own templates, laid over those of the package; None for none. [-]
+        made_at: The time to print; the same result and time give the same text. [-]
+    Returns: The page. [-]
+    Raises: ReportError if a template of the reader fails, or leaves out or hides a caution.
+    """
+    # The command line imports this room for its other parts too: what is slow waits until it is needed.
+    from retrofit.report.guard import check_page
+    from retrofit.report.page import build_page
+    from retrofit.report.templates import render_cautions, render_page
+    from retrofit.units import UNIT_SYSTEMS
+
+    page = build_page(comparison, UNIT_SYSTEMS[units], made_at)
+    cautions = render_cautions(page)
+    html = render_page(page, cautions, template_folder)
+    check_page(html, page, cautions)
+    return html
+
+
+def write_report(path: str | os.PathLike[str], html: str) -> None:
+    """Write a report so that the file is either the whole new one or what it was before.
+
+    Args:
+        path: The file to write. [-]
+        html: The report. [-]
+    Raises: ReportError if the path is a folder, its folder is missing, or it cannot be written.
+    """
+    from retrofit.report.files import write_whole
+
+    write_whole(Path(path), html)

@@ -1,0 +1,259 @@
+"""What stands in the report, as frozen records of finished texts: templates put it in place and compute nothing."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from datetime import datetime
+from pathlib import PurePath
+
+from retrofit import figures
+from retrofit.case import Case
+from retrofit.checks import Answer, answer, model_band, not_checked
+from retrofit.report.cautioning import DEFERENCE, CautionGroup, caution_groups
+from retrofit.report.comparing import comparison_table, convention
+from retrofit.report.guard import POLICY
+from retrofit.report.inputs import FIXED, Input, Taken, defaults, inputs, missing
+from retrofit.report.states import Portrait, enthalpy_note, portraits
+from retrofit.report.table import Table
+from retrofit.report.values import UsedSource, environment_table, used_sources
+from retrofit.study import Comparison, Entry, Finding
+from retrofit.units import MISSING, UnitSystem, listed
+
+LEVEL_WORDS = {"stop": "Stop", "work": "Work", "unknown": "Unknown", "note": "Note"}
+SYSTEM_WORDS = {"si": "metric units", "ip": "inch-pound units"}
+SHARED_BY = 3  # refrigerants with a finding in the same words: it is then written out once for all
+FAMILY_WORDS = {
+    "keep": "in the plant today",
+    "convert": "conversion of this plant",
+    "replace": "by default a new plant, built for its class",
+}
+
+
+@dataclass(frozen=True)
+class Judged:
+    """A refrigerant with its verdict and findings; `reasons` is the short form for the summary.
+
+    `findings` are its own; `shared` are the titles of those that stand in the same words for others too.
+    """
+
+    place: int
+    name: str
+    safety_class: str
+    family: str
+    verdict: str
+    reasons: str
+    findings: tuple[Finding, ...]
+    shared: tuple[str, ...]
+
+
+@dataclass(frozen=True)
+class SharedFinding:
+    """A finding in the same words for several refrigerants."""
+
+    finding: Finding
+    about: str
+
+
+@dataclass(frozen=True)
+class Graded:
+    """How far the model of a refrigerant can be trusted, as texts."""
+
+    name: str
+    word: str
+    bubble: str
+    dew: str
+    pairs: str
+    range_end: str
+
+
+@dataclass(frozen=True)
+class Page:
+    """Everything a template shows."""
+
+    policy: str
+    title: str
+    title_css: str
+    about: str
+    facts: tuple[tuple[str, str], ...]
+    units: str
+    made_at: str
+    case_file: str
+    versions: tuple[tuple[str, str], ...]
+    answer: Answer
+    convention: str
+    band: str
+    judged: tuple[Judged, ...]
+    existing: Judged
+    shared: tuple[SharedFinding, ...]
+    deference: str
+    cautions: tuple[CautionGroup, ...]
+    comparison: Table
+    environment: Table
+    overlays: tuple[figures.Drawing, ...]
+    charts: tuple[figures.Drawing, ...]
+    enthalpy_note: str
+    portraits: tuple[Portrait, ...]
+    inputs: tuple[Input, ...]
+    defaults: tuple[Taken, ...]
+    missing: tuple[str, ...]
+    fixed: tuple[str, ...]
+    grades: tuple[Graded, ...]
+    difference_unit: str
+    temperature_unit: str
+    sources: tuple[UsedSource, ...]
+    check_sources: tuple[str, ...]
+    not_checked: tuple[str, ...]
+    level_words: dict[str, str]
+
+
+def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> Page:
+    """Return everything the report shows of a result.
+
+    Args:
+        comparison: An assessed result.
+        units: The reader's units.
+        made_at: The time to print.
+    """
+    case = comparison.case
+    shared = _shared(comparison)
+    solved = any(entry.duty is not None for entry in comparison.entries)
+    return Page(
+        policy=POLICY,
+        title=case.title,
+        title_css=css_string(case.title),
+        about=case.about or "",
+        facts=_facts(comparison, units),
+        units=SYSTEM_WORDS[units.name],
+        made_at=_time(made_at),
+        case_file=PurePath(case.path).name,
+        versions=tuple(comparison.versions.items()),
+        answer=answer(comparison, units),
+        convention=convention(comparison),
+        band=band_text(units),
+        judged=tuple(_judged(place, entry, shared) for place, entry in enumerate(comparison.entries) if place),
+        existing=_judged(0, comparison.existing, shared),
+        shared=tuple(SharedFinding(finding, ", ".join(names)) for finding, names in shared.items()),
+        deference=DEFERENCE,
+        cautions=caution_groups(comparison),
+        comparison=comparison_table(comparison, units),
+        environment=environment_table(comparison, units),
+        overlays=figures.overlay_charts(comparison, units),
+        charts=_charts(comparison, units) if solved else (),
+        enthalpy_note=enthalpy_note(units),
+        portraits=portraits(comparison, units),
+        inputs=inputs(case, units),
+        defaults=defaults(case, units),
+        missing=missing(case),
+        fixed=FIXED,
+        grades=tuple(_graded(entry, units) for entry in comparison.entries),
+        difference_unit=units.label("temperature difference"),
+        temperature_unit=units.label("temperature"),
+        sources=used_sources(comparison),
+        check_sources=_check_sources(comparison),
+        not_checked=not_checked(),
+        level_words=LEVEL_WORDS,
+    )
+
+
+def css_string(text: str) -> str:
+    """Return a text fit to stand between the quotes of a CSS string: all but letters and digits as \\hex.
+
+    Source: CSS Syntax Module Level 3, 4.3.7: a backslash, one to six hex digits and a blank.
+    """
+    return "".join(c if c.isascii() and c.isalnum() else f"\\{ord(c):x} " for c in text)
+
+
+def band_text(units: UnitSystem) -> str:
+    """Return the band of the model in one sentence."""
+    band = model_band()
+    discharge = units.with_unit("temperature difference", band["T_discharge"].value, decimals=0)
+    return (
+        f"Band of the model: capacity ±{band['capacity'].value:.0%}, COP ±{band['cop'].value:.0%}, discharge "
+        f"temperature ±{discharge}, pressures ±{band['pressure'].value:.0%}. A difference inside the band is no meaningful "
+        "difference; in the tables it carries the sign ≈."
+    ).replace("%", "\N{NO-BREAK SPACE}%")
+
+
+def _facts(comparison: Comparison, units: UnitSystem) -> tuple[tuple[str, str], ...]:
+    case: Case = comparison.case
+    reading = {"dew": "dew point", "mean": "mean"}[case.duty.reading]
+    charge = case.plant.charge_kg
+    limit = case.plant.high_side_limit_Pa
+    gauge = None if limit is None else limit - case.plant.ambient_pressure_Pa
+    return (
+        ("In the plant today", comparison.existing.refrigerant.display_name),
+        ("Cooling", units.with_unit("cooling", case.duty.cooling_W)),
+        (f"Evaporating, {reading}", units.with_unit("temperature", case.duty.T_evap_K)),
+        (f"Condensing, {reading}", units.with_unit("temperature", case.duty.T_cond_K)),
+        ("Charge", units.with_unit("mass", charge)),
+        ("Nameplate, high side", units.with_unit("gauge pressure", gauge, decimals=1)),
+    )
+
+
+def _charts(comparison: Comparison, units: UnitSystem) -> tuple[figures.Drawing, ...]:
+    return (
+        figures.pressure_chart(comparison, units),
+        figures.discharge_chart(comparison, units),
+        figures.change_chart(comparison),
+    )
+
+
+def _shared(comparison: Comparison) -> dict[Finding, list[str]]:
+    """Return the findings that stand in the same words for many refrigerants, with their names."""
+    found: dict[Finding, list[str]] = {}
+    for entry in comparison.entries:
+        for finding in entry.findings:
+            found.setdefault(finding, []).append(entry.refrigerant.display_name)
+    return {finding: names for finding, names in found.items() if len(names) >= SHARED_BY}
+
+
+def _judged(place: int, entry: Entry, shared: dict[Finding, list[str]]) -> Judged:
+    return Judged(
+        place,
+        entry.refrigerant.display_name,
+        entry.refrigerant.safety_class.text or "not stated",
+        FAMILY_WORDS[entry.family],
+        entry.verdict or "not judged",
+        _reasons(entry),
+        tuple(finding for finding in entry.findings if finding not in shared),
+        tuple(f.title for f in entry.findings if f in shared),
+    )
+
+
+def _reasons(entry: Entry) -> str:
+    """Return the titles of the findings that decide the verdict, or the work if nothing stands against it."""
+    for level in ("stop", "unknown", "work"):
+        titles = [finding.title for finding in entry.findings if finding.level == level]
+        if titles:
+            return "; ".join(titles)
+    return "nothing found by the checks made here"
+
+
+def _graded(entry: Entry, units: UnitSystem) -> Graded:
+    name, grade = entry.refrigerant.display_name, entry.grade
+    if grade is None:
+        return Graded(name, "no model", MISSING, MISSING, MISSING, MISSING)
+    bubble, dew = (
+        units.text("temperature difference", value, signed=True, missing="not published")
+        for value in (grade.bubble_difference_K, grade.dew_difference_K)
+    )
+    pairs = "; ".join(f"R-{a[1:]} with R-{b[1:]}" for a, b in grade.estimated_pairs)
+    end = units.text("temperature", entry.T_limit_K, decimals=0, missing="not stated")
+    return Graded(name, grade.word, bubble, dew, pairs or "none", end)
+
+
+def _check_sources(comparison: Comparison) -> tuple[str, ...]:
+    """Return where the thresholds of the findings come from, each once, with what it was used for."""
+    found: dict[str, list[str]] = {}
+    for entry in comparison.entries:
+        for finding in entry.findings:
+            titles = found.setdefault(finding.source, [])
+            if finding.title not in titles:
+                titles.append(finding.title)
+    return tuple(f"{listed(titles, 'and')}: {source}" for source, titles in found.items() if source)
+
+
+def _time(made_at: datetime) -> str:
+    months = "January February March April May June July August September October November December".split()
+    zone = f" {made_at.tzname()}" if made_at.tzinfo else ""
+    return f"{made_at.day} {months[made_at.month - 1]} {made_at.year}, {made_at:%H:%M}{zone}"

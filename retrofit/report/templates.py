@@ -1,0 +1,104 @@
+"""Finding templates and filling them: the built-in ones, with the reader's own folder laid over them.
+
+The block of cautions is always filled from the built-in template, whatever the reader's folder holds.
+"""
+
+from __future__ import annotations
+
+import traceback
+from pathlib import Path
+from typing import TYPE_CHECKING, Any
+
+import retrofit
+from retrofit.errors import ReportError
+from retrofit.units import shown
+
+if TYPE_CHECKING:
+    from markupsafe import Markup
+
+    from retrofit.report.page import Page
+
+PAGE, CAUTIONS = "report.html", "cautions.html"
+FOLDER = "report_templates"
+
+
+def built_in_folder() -> Path:
+    """Return the folder of the built-in templates: inside the installed package, else beside it.
+
+    Raises: ReportError if neither is there.
+    """
+    package = Path(retrofit.__file__).resolve().parent
+    for folder in (package / FOLDER, package.parent / FOLDER):
+        if (folder / PAGE).is_file():
+            return folder
+    raise ReportError(f"the templates of the report are missing: no {FOLDER}/{PAGE}; install the package again")
+
+
+def render_cautions(page: Page) -> Markup:
+    """Return the block of cautions, from the built-in template alone."""
+    from markupsafe import Markup
+
+    return Markup(_environment(None).get_template(CAUTIONS).render(page=page))
+
+
+def render_page(page: Page, cautions: Markup, template_folder: Path | None) -> str:
+    """Return the page.
+
+    Args:
+        page: What it shows.
+        cautions: The finished block of cautions, which a page puts in place as `{{ cautions }}`.
+        template_folder: The reader's own templates, None for none. [-]
+    Raises: ReportError naming file and line if a template of the reader fails.
+    """
+    if template_folder is None:
+        return _filled(None, page, cautions)
+    if not template_folder.is_dir():
+        name = shown(str(template_folder), 300)
+        raise ReportError(f'there is no template folder "{name}"; name a folder with templates such as {PAGE}')
+    return _with_own_templates(page, cautions, template_folder)
+
+
+def _with_own_templates(page: Page, cautions: Markup, folder: Path) -> str:
+    from jinja2 import TemplateError
+
+    try:
+        return _filled(folder, page, cautions)
+    except (
+        TemplateError,
+        TypeError,
+        ValueError,
+        LookupError,
+        AttributeError,
+        ArithmeticError,
+        RecursionError,
+    ) as error:
+        raise ReportError(f"{_where(error, folder)}: {shown(str(error), 300)}; correct the template") from error
+
+
+def _filled(folder: Path | None, page: Page, cautions: Markup) -> str:
+    return str(_environment(folder).get_template(PAGE).render(page=page, cautions=cautions))
+
+
+def _environment(folder: Path | None) -> Any:
+    from jinja2 import ChoiceLoader, FileSystemLoader, StrictUndefined
+    from jinja2.sandbox import ImmutableSandboxedEnvironment
+
+    folders = [*([folder] if folder else []), built_in_folder()]
+    return ImmutableSandboxedEnvironment(
+        loader=ChoiceLoader([FileSystemLoader(str(place)) for place in folders]),
+        autoescape=True,
+        undefined=StrictUndefined,
+        trim_blocks=True,
+        lstrip_blocks=True,
+    )
+
+
+def _where(error: BaseException, folder: Path) -> str:
+    """Return file and line of a template error: of a syntax error as it says, else from the traceback."""
+    filename, line = getattr(error, "filename", None), getattr(error, "lineno", None)
+    if filename and line:
+        return f"{shown(str(filename), 300)}:{line}"
+    frames = [frame for frame in traceback.extract_tb(error.__traceback__) if frame.filename.endswith(".html")]
+    if frames:
+        return f"{shown(frames[-1].filename, 300)}:{frames[-1].lineno}"
+    return f"a template in {shown(str(folder), 300)}"
