@@ -19,12 +19,13 @@ from retrofit.cycle import (
     solve_cycle,
     state_points,
 )
-from retrofit.errors import RetrofitError
+from retrofit.errors import OutsideValidRangeError, RetrofitError
 from retrofit.properties import Fluid, fluid, grade
 from retrofit.refrigerants import Refrigerant, cautions_for, change_cautions, find
 from retrofit.study.lines import chart_lines
 from retrofit.study.result import Comparison, Entry, FloatArray, Performance, Point
 
+KELVIN = 273.15
 # Ratios to the existing refrigerant: name, basis, quantity of the performance.
 RATIOS = (
     ("cop", "duty", "cop"),
@@ -128,12 +129,24 @@ def _existing(case: Case, settings: Settings, on_build: OnBuild | None) -> tuple
     entry = Entry(refrigerant, "keep", "not computed", None, cautions_for(refrigerant))
     reading = Temperatures(case.duty.T_evap_K, case.duty.T_cond_K, case.duty.reading)
     try:
+        _check_subcooling(case)
         behaviour = fluid(refrigerant.designation, on_build)
         pressures = matched_pressures(behaviour, reading, settings.subcooling_K)
         targets = cycle_temperatures(solve_cycle(behaviour, *pressures, settings), case.compare.match)
         return targets, _solved(case, settings, targets, entry, behaviour)
     except RetrofitError as error:
         return None, replace(entry, reason=error.message)
+
+
+def _check_subcooling(case: Case) -> None:
+    """Refuse liquid that would be colder than the evaporator, before a model says so in its own terms."""
+    duty = case.duty
+    liquid_K = duty.T_cond_K - duty.subcooling_K
+    if liquid_K <= duty.T_evap_K:
+        raise OutsideValidRangeError(
+            f"with {duty.subcooling_K:g} K of subcooling the liquid at the expansion valve, {liquid_K - KELVIN:.1f} degC, "
+            f"would be no warmer than the evaporator, {duty.T_evap_K - KELVIN:.1f} degC; give less subcooling"
+        )
 
 
 def _candidate(

@@ -199,6 +199,16 @@ def test_without_the_existing_refrigerant_every_row_says_why_nothing_is_compared
     assert (found.swept_volume_m3_per_s, found.swept_volume_from) == (None, "duty")
 
 
+def test_more_subcooling_than_lift_is_named_as_such(case_of):
+    """Liquid colder than the evaporator is refused in words of the case, not of a property table."""
+    duty = {"evaporating": "0 degC", "condensing": "10 degC", "subcooling": "12 K"}
+    found = compare(case_of("R134a", ["R448A"], duty=duty))
+
+    assert "12 K of subcooling" in found.existing.reason
+    assert "give less subcooling" in found.existing.reason
+    assert {entry.status for entry in found.entries} == {"not computed"}
+
+
 def test_a_given_swept_volume_is_kept_where_nothing_can_be_computed(case_of):
     """What the case states is not lost with the existing refrigerant."""
     found = compare(case_of("R744", ["R448A"], compressor={"swept_volume": "36 m3/h"}))
