@@ -7,6 +7,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
+from retrofit.errors import OutsideValidRangeError
 from retrofit.properties import Fluid
 
 FloatArray = NDArray[np.float64]
@@ -111,9 +112,11 @@ def solve_cycle(fluid: Fluid, p_evap_Pa: ArrayLike, p_cond_Pa: ArrayLike, settin
         p_cond_Pa: Pressure of the condenser, from compressor to expansion valve. [Pa]
         settings: Superheat, subcooling and efficiencies. [K, -]
     Returns: The cycle; its arrays have the broadcast shape of everything given.
-    Raises: OutsideValidRangeError if a state lies outside the fluid's range (NaN there if it is lenient).
+    Raises: OutsideValidRangeError if a state lies outside the fluid's range or the condensing pressure is not
+        above the evaporating one (NaN there if the fluid is lenient).
     Source: energy balance of each part; isentropic efficiency = isentropic work / real work.
     """
+    p_cond_Pa = _above(fluid, p_evap_Pa, p_cond_Pa)
     evaporator = fluid.vapour(p_evap_Pa, settings.useful_superheat_K)
     superheat = np.asarray(settings.useful_superheat_K) + np.asarray(settings.line_superheat_K)
     suction = fluid.vapour(p_evap_Pa, superheat)
@@ -143,3 +146,18 @@ def solve_cycle(fluid: Fluid, p_evap_Pa: ArrayLike, p_cond_Pa: ArrayLike, settin
     }
     shape = np.broadcast_shapes(*(np.shape(array) for array in arrays.values()))
     return Cycle(settings=settings, **{name: np.broadcast_to(array, shape) for name, array in arrays.items()})
+
+
+def _above(fluid: Fluid, p_evap_Pa: ArrayLike, p_cond_Pa: ArrayLike) -> FloatArray:
+    """Return the condensing pressures if they are above the evaporating ones: below, a compressor does nothing."""
+    p_evap, p_cond = np.asarray(p_evap_Pa, dtype=float), np.asarray(p_cond_Pa, dtype=float)
+    is_not = p_cond <= p_evap
+    if not np.any(is_not):
+        return p_cond
+    if fluid.lenient:
+        return np.where(is_not, np.nan, p_cond)
+    low, high = (np.broadcast_to(p, is_not.shape)[is_not].flat[0] / 1e5 for p in (p_evap, p_cond))
+    raise OutsideValidRangeError(
+        f"{fluid.designation}: condensing pressure {high:.4g} bar is not above the evaporating pressure {low:.4g} bar: "
+        "there is nothing to compress"
+    )
