@@ -144,8 +144,8 @@ def _check_subcooling(case: Case) -> None:
     liquid_K = duty.T_cond_K - duty.subcooling_K
     if liquid_K <= duty.T_evap_K:
         raise OutsideValidRangeError(
-            f"with {duty.subcooling_K:g} K of subcooling the liquid at the expansion valve, {liquid_K - KELVIN:.1f} degC, "
-            f"would be no warmer than the evaporator, {duty.T_evap_K - KELVIN:.1f} degC; give less subcooling"
+            f"with {duty.subcooling_K:g} K of subcooling the liquid at the expansion valve, "
+            f"{liquid_K - KELVIN:.1f} degC, would be no warmer than the evaporator, {duty.T_evap_K - KELVIN:.1f} degC; give less subcooling"
         )
 
 
