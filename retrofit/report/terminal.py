@@ -13,6 +13,7 @@ from retrofit.units import UnitSystem, listed, shown
 
 Emphasis = Callable[[str], str]
 INDENT = " " * 9
+NEAR = "≈"
 CONVENTIONS = {
     "dew": "equal dew temperatures",
     "mean": "equal mean temperatures",
@@ -143,9 +144,13 @@ def _compressor(comparison: Comparison, solved: Sequence[Entry], units: UnitSyst
 
 
 def _change(entry: Entry, ratio: str) -> str:
+    """Return a ratio to today as a change, with a sign before it where it lies inside the band of the model."""
     if entry.family == "keep" or ratio not in entry.relative:
         return "·"
-    return f"{entry.relative[ratio] - 1.0:+.1%}".replace("-", "−").replace("%", " %")
+    change = entry.relative[ratio] - 1.0
+    band = model_band()["cop" if ratio == "cop" else "capacity"].value
+    near = f"{NEAR} " if abs(change) <= band else ""
+    return near + f"{change:+.1%}".replace("-", "−").replace("%", " %")
 
 
 def _refrigerants(entries: Sequence[Entry], strong: Emphasis) -> str:
@@ -194,8 +199,8 @@ def _small_print(comparison: Comparison, columns: int, strong: Emphasis) -> str:
     assumed = [f"{item.key} = {item.shown_text}" for item in case.defaults]
     parts = [
         f"Accuracy: capacity ±{bands['capacity'].value:.0%}, COP ±{bands['cop'].value:.0%}, discharge "
-        f"±{bands['T_discharge'].value:.0f} K, pressures ±{bands['pressure'].value:.0%}; a difference inside the band "
-        "means nothing.",
+        f"±{bands['T_discharge'].value:.0f} K, pressures ±{bands['pressure'].value:.0%}; {NEAR} marks a difference inside "
+        "the band: no meaningful difference.",
         f"Assumed, not in the case: {listed(assumed, 'and')}." if assumed else "",
         "Not checked: " + "; ".join(not_checked()) + ".",
         "Versions: " + ", ".join(f"{name} {number}" for name, number in comparison.versions.items()) + ".",
