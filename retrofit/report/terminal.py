@@ -199,8 +199,8 @@ def _small_print(comparison: Comparison, columns: int, strong: Emphasis) -> str:
     assumed = [f"{item.key} = {item.shown_text}" for item in case.defaults]
     parts = [
         f"Accuracy: capacity ±{bands['capacity'].value:.0%}, COP ±{bands['cop'].value:.0%}, discharge "
-        f"±{bands['T_discharge'].value:.0f} K, pressures ±{bands['pressure'].value:.0%}; {NEAR} marks a difference inside "
-        "the band: no meaningful difference.",
+        f"±{bands['T_discharge'].value:.0f} K, pressures ±{bands['pressure'].value:.0%}; {NEAR} marks a difference "
+        "inside the band: no meaningful difference.",
         f"Assumed, not in the case: {listed(assumed, 'and')}." if assumed else "",
         "Not checked: " + "; ".join(not_checked()) + ".",
         "Versions: " + ", ".join(f"{name} {number}" for name, number in comparison.versions.items()) + ".",
