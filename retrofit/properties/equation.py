@@ -344,6 +344,10 @@ class EquationModel:
     def gas_at_entropy(self, p_Pa: float, s_J_per_kgK: float, T_guess_K: float) -> PhaseState:
         """Return the vapour state of a given entropy at a pressure, by Newton's method on temperature.
 
+        Args:
+            p_Pa: Pressure. [Pa]
+            s_J_per_kgK: Entropy. [J/(kg K)]
+            T_guess_K: Temperature to start from. [K]
         Raises: NoSolutionError if it does not converge.
         Source: (ds/dT) at constant pressure = cp / T.
         """
@@ -354,6 +358,10 @@ class EquationModel:
     def gas_at_enthalpy(self, p_Pa: float, h_J_per_kg: float, T_guess_K: float) -> PhaseState:
         """Return the vapour state of a given enthalpy at a pressure, by Newton's method on temperature.
 
+        Args:
+            p_Pa: Pressure. [Pa]
+            h_J_per_kg: Enthalpy. [J/kg]
+            T_guess_K: Temperature to start from. [K]
         Raises: NoSolutionError if it does not converge.
         Source: (dh/dT) at constant pressure = cp.
         """
@@ -371,6 +379,9 @@ class EquationModel:
     def at_pressure(self, p_Pa: float, near: Equilibrium) -> Equilibrium:
         """Return the equilibrium of the quality of `near` at a pressure, by Newton's method on ln p(1/T).
 
+        Args:
+            p_Pa: Pressure. [Pa]
+            near: A checked equilibrium on the same line.
         Raises: NoSolutionError if it does not converge; ModelFaultError where the line cannot be followed.
         """
         last, before, slope = near, None, -10.0 * near.T_K

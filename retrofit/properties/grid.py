@@ -33,7 +33,13 @@ def node_derivatives(x: FloatArray, values: FloatArray, axis: int) -> FloatArray
 
 
 def cell(nodes: FloatArray, x: FloatArray) -> tuple[NDArray[np.intp], FloatArray, FloatArray]:
-    """Return for each position its cell, its place in the cell (0 to 1) and the width of the cell."""
+    """Return for each position its cell, its place in the cell and the width of the cell.
+
+    Args:
+        nodes: Node positions, rising, shape (n,). [any]
+        x: Positions. [unit of nodes]
+    Returns: Number of the node on the left [-], place from 0 to 1 [-], width [unit of nodes], shaped like `x`.
+    """
     left = np.searchsorted(nodes[1:-1], x, side="right")
     start = nodes[left]
     width = nodes[left + 1] - start
@@ -41,7 +47,13 @@ def cell(nodes: FloatArray, x: FloatArray) -> tuple[NDArray[np.intp], FloatArray
 
 
 def hermite_weights(t: FloatArray, width: FloatArray) -> tuple[FloatArray, ...]:
-    """Return the weights of left value, left slope, right value and right slope."""
+    """Return the weights of left value, left slope, right value and right slope.
+
+    Args:
+        t: Place in the cell, 0 to 1. [-]
+        width: Width of the cell. [any]
+    Returns: Weights of the values [-] and of the slopes [unit of width].
+    """
     t2 = t * t
     right = t2 * (3.0 - 2.0 * t)
     right_slope = t2 * (t - 1.0)
@@ -50,7 +62,13 @@ def hermite_weights(t: FloatArray, width: FloatArray) -> tuple[FloatArray, ...]:
 
 
 def hermite_slope_weights(t: FloatArray, width: FloatArray) -> tuple[FloatArray, ...]:
-    """Return the weights of the same four for the first derivative."""
+    """Return the weights of the same four for the first derivative.
+
+    Args:
+        t: Place in the cell, 0 to 1. [-]
+        width: Width of the cell. [any]
+    Returns: Weights of the values [1 / unit of width] and of the slopes [-].
+    """
     bow = 6.0 * t * (1.0 - t) / width
     return -bow, 1.0 - t * (4.0 - 3.0 * t), bow, t * (3.0 * t - 2.0)
 
@@ -72,7 +90,12 @@ class Curve:
 
     @classmethod
     def through(cls, x: FloatArray, values: FloatArray) -> Curve:
-        """Return the cubic spline through `values`, shape (quantities, n)."""
+        """Return the cubic spline through values.
+
+        Args:
+            x: Node positions, rising, shape (n,). [any]
+            values: Node values, shape (quantities, n). [any]
+        """
         return cls(x, np.stack([values, node_derivatives(x, values, axis=1)], axis=1))
 
     def __call__(self, x: FloatArray, *quantities: int, weights: Weights = hermite_weights) -> list[FloatArray]:
@@ -86,7 +109,12 @@ class Curve:
         ]
 
     def slope(self, x: FloatArray, quantity: int) -> FloatArray:
-        """Return the first derivative of one quantity at `x`."""
+        """Return the first derivative of one quantity. [unit of the quantity / unit of x]
+
+        Args:
+            x: Positions. [unit of the nodes]
+            quantity: Which quantity. [-]
+        """
         return self(x, quantity, weights=hermite_slope_weights)[0]
 
 
@@ -105,7 +133,13 @@ class Surface:
 
     @classmethod
     def through(cls, x: FloatArray, y: FloatArray, values: FloatArray) -> Surface:
-        """Return the bicubic spline through `values`, shape (quantities, n, m)."""
+        """Return the bicubic spline through values.
+
+        Args:
+            x: Node positions along the first axis, rising, shape (n,). [any]
+            y: Node positions along the second axis, rising, shape (m,). [any]
+            values: Node values, shape (quantities, n, m). [any]
+        """
         along_x = node_derivatives(x, values, axis=1)
         along_y = node_derivatives(y, values, axis=2)
         twist = node_derivatives(y, along_x, axis=2)
@@ -117,7 +151,13 @@ class Surface:
         return self._weighted(x, y, quantities, hermite_weights)
 
     def slope_y(self, x: FloatArray, y: FloatArray, quantity: int) -> FloatArray:
-        """Return the first derivative along y of one quantity."""
+        """Return the first derivative along y of one quantity. [unit of the quantity / unit of y]
+
+        Args:
+            x: Positions along the first axis. [unit of its nodes]
+            y: Positions along the second axis; broadcasts with `x`. [unit of its nodes]
+            quantity: Which quantity. [-]
+        """
         return self._weighted(x, y, (quantity,), hermite_slope_weights)[0]
 
     def _weighted(

@@ -283,6 +283,10 @@ def greatest_subcooling(T_bubble_K: FloatArray | np.float64, T_lowest_K: float) 
     """Return how far below a bubble temperature the liquid table goes. [K]
 
     Close to the lowest temperature no further than that; without a kink, which a spline would not follow.
+
+    Args:
+        T_bubble_K: Bubble temperature. [K]
+        T_lowest_K: Lowest temperature of the model. [K]
     """
     above = T_bubble_K - T_lowest_K
     return LARGEST_SUBCOOLING_K * np.tanh(above / LARGEST_SUBCOOLING_K)
