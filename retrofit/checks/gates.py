@@ -23,6 +23,7 @@ OIL_FAMILIES = {
     "PAG": "polyalkylene glycol",
     "PAO": "polyalphaolefin",
 }
+NO_SOURCE = "catalogue, which states none"
 Gate = Callable[[Comparison, Entry], Iterator[Finding]]
 
 
@@ -51,7 +52,7 @@ def class_change(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             f"The safety class of {old.designation} or {new.designation} is not stated, so the step from one to the "
             "other cannot be judged.",
             "Look it up in ASHRAE 34 or ISO 817 before anything else.",
-            new.safety_class.source,
+            new.safety_class.source or NO_SOURCE,
         )
     elif entry.family == "replace":
         yield Finding(
@@ -90,17 +91,22 @@ def capacity(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
 
 
 def _today_against_duty(comparison: Comparison, today: Performance[float]) -> Iterator[Finding]:
+    """Note where swept volume and duty of the case do not describe one plant: a slip in either shows here."""
     duty = comparison.case.duty.cooling_W
-    if today.cooling_W >= duty * (1.0 - 0.02):
+    share = today.cooling_W / duty
+    short, ample = threshold("displacement_short"), threshold("displacement_ample")
+    level = short.level_below(share) or ample.level(share)
+    if level is None:
         return
+    measured = "what it reaches" if share < 1.0 else "the duty"
     yield Finding(
         "inputs-disagree",
-        "note",
+        level,
         "Displacement and duty of the case do not quite agree",
-        f"With the displacement and efficiencies given, today's compressor reaches {today.cooling_W / 1e3:.4g} kW, "
-        f"{today.cooling_W / duty:.0%} of the duty of {duty / 1e3:.4g} kW.",
-        "Candidates are measured against what it reaches; check swept volume, speed and volumetric efficiency.",
-        "numbers of the case",
+        f"with the displacement and efficiencies given, today's compressor reaches {today.cooling_W / 1e3:.4g} kW, "
+        f"{share:.0%} of the duty of {duty / 1e3:.4g} kW.",
+        f"Candidates are measured against {measured}; check swept volume, speed and volumetric efficiency.",
+        (short if share < 1.0 else ample).source,
     )
 
 
@@ -267,7 +273,7 @@ def oil(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             "Oil not known" if families else "Usual oil of the refrigerant not stated",
             f"usual {listed(families) if families else 'oil not stated'}; in the plant {here or 'not stated'}.",
             "Take a sample and ask the maker.",
-            usual.source,
+            usual.source or NO_SOURCE,
         )
     elif here not in families:
         yield Finding(
@@ -324,18 +330,24 @@ def model(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
 
 
 def ozone(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
-    """Note a candidate that depletes the ozone layer."""
-    depletion = entry.refrigerant.odp
-    if entry is not comparison.existing and depletion.number:
-        yield Finding(
-            "ozone",
-            "stop",
-            "Depletes the ozone layer",
-            f"Ozone depletion potential {depletion.number:.3g}.",
-            "Charging a plant with such a refrigerant is banned or bound to conditions almost everywhere; ask the "
-            "authority.",
-            depletion.source,
-        )
+    """Stop a candidate that depletes the ozone layer; note a potential smaller than that of any controlled one."""
+    depletion, limit = entry.refrigerant.odp, threshold("ozone")
+    level = None if depletion.number is None else limit.level(depletion.number)
+    if entry is comparison.existing or level is None:
+        return
+    advice = {
+        "stop": "Charging a plant with such a refrigerant is banned or bound to conditions almost everywhere; ask the "
+        "authority.",
+        "note": "That is less than any substance the Montreal Protocol controls; ask the authority all the same.",
+    }
+    yield Finding(
+        "ozone",
+        level,
+        "Depletes the ozone layer" if level == "stop" else "Very small ozone depletion potential",
+        f"ozone depletion potential {depletion.number:.2g}, against {limit.stop:g} ({limit.unit}).",
+        advice[level],
+        f"{limit.source}; {depletion.source}",
+    )
 
 
 def always_work(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
