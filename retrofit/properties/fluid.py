@@ -182,10 +182,13 @@ class Fluid:
 
     def _wet_enthalpy(self, dew: State, s_above: FloatArray) -> FloatArray:
         """Solve s(h) = s just below the dew line by Newton's method: dh = T ds at constant pressure and matter."""
-        h = dew.h_J_per_kg + dew.T_K * np.minimum(s_above, 0.0)
+        bubble, s = self.bubble(dew.p_Pa), dew.s_J_per_kgK + np.minimum(s_above, 0.0)
+        share = (s - bubble.s_J_per_kgK) / (dew.s_J_per_kgK - bubble.s_J_per_kgK)
+        share = self._inside("entropy, as a share of the way from bubble to dew point,", share, 0.0, 1.0, "")
+        h = bubble.h_J_per_kg + share * (dew.h_J_per_kg - bubble.h_J_per_kg)
         for _ in range(8):
             state = self.two_phase(dew.p_Pa, h)
-            h = h + state.T_K * (dew.s_J_per_kgK + np.minimum(s_above, 0.0) - state.s_J_per_kgK)
+            h = np.clip(h + state.T_K * (s - state.s_J_per_kgK), bubble.h_J_per_kg, dew.h_J_per_kg)
         return h
 
     def T_at_enthalpy(self, p_Pa: ArrayLike, h_J_per_kg: ArrayLike) -> FloatArray:

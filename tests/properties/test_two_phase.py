@@ -125,3 +125,15 @@ def test_wet_end_of_a_blend():
 
         assert h == pytest.approx(state.h_J_per_kg, abs=1e-4 * latent)
         assert float(f.T_at_enthalpy(bubble.p_Pa, state.h_J_per_kg)) == pytest.approx(state.T_K, abs=3e-3)
+
+
+@pytest.mark.parametrize("name", NEAR_AZEOTROPES + GLIDING + ("R134a", "R600a"))
+def test_entropy_of_any_wet_state_gives_its_enthalpy(name):
+    """From saturated liquid to saturated vapour, the entropy of a state leads back to its enthalpy."""
+    f = fluid(name)
+    p = np.geomspace(f.p_bubble(f.T_range_K[0] + 15.0), 0.85 * f.p_dew(f.T_range_K[1]), 8)[:, None]
+    low, high = f.bubble(p).h_J_per_kg, f.dew(p).h_J_per_kg
+    h = low + np.array([0.0, 1e-3, 0.02, 0.1, 0.5, 0.9, 0.999, 1.0]) * (high - low)
+    back = f.h_at_entropy(p, f.two_phase(p, h).s_J_per_kgK)
+
+    np.testing.assert_allclose((back - h) / (high - low), 0.0, atol=1e-6)
