@@ -2,7 +2,9 @@
 
 from __future__ import annotations
 
+import codecs
 import contextlib
+import io
 import json
 import os
 import sys
@@ -25,6 +27,12 @@ EPILOG = (
 )
 CASE = click.Path(path_type=Path)
 WIDEST_PROSE = 100
+INTERRUPTED = 128 + 2  # by the custom of shells: 128 and the number of the signal
+# What stands for a sign that the encoding of a stream has no place for; a minus must never get lost.
+PLAIN = {
+    **{"−": "-", "–": "-", "─": "-", "·": ".", "±": "+/-", "≈": "~", "°": "deg", "²": "2", "³": "3", "…": "..."},
+    **dict.fromkeys("\N{NO-BREAK SPACE}\N{NARROW NO-BREAK SPACE}\N{THIN SPACE}", " "),
+}
 
 
 def _guarded(command: Callable[..., None]) -> Callable[..., None]:
@@ -32,8 +40,11 @@ def _guarded(command: Callable[..., None]) -> Callable[..., None]:
 
     @wraps(command)
     def run(*args: Any, **options: Any) -> None:
+        _write_plainly_where_needed()
         try:
             command(*args, **options)
+        except KeyboardInterrupt:
+            _fail("stopped by the keyboard; nothing half done is left", INTERRUPTED)
         except CaseFileError as error:
             click.echo(str(error), err=True)
             sys.exit(error.exit_code)
@@ -54,6 +65,21 @@ def _fail(message: str, status: int) -> NoReturn:
 
     click.echo(f"retrofit: {shown(message, 2000)}", err=True)
     sys.exit(status)
+
+
+def _write_plainly_where_needed() -> None:
+    """Let every text through to a stream whose encoding lacks some of its signs, as files on some systems do."""
+    codecs.register_error("plain", _plain)
+    for stream in (sys.stdout, sys.stderr):
+        if isinstance(stream, io.TextIOWrapper):
+            stream.reconfigure(errors="plain")
+
+
+def _plain(error: UnicodeError) -> tuple[str, int]:
+    if not isinstance(error, UnicodeEncodeError):
+        raise error
+    missing = error.object[error.start : error.end]
+    return "".join(PLAIN.get(sign) or ascii(sign)[1:-1] for sign in missing), error.end
 
 
 def _columns() -> int:
@@ -81,7 +107,7 @@ def _compared(case_file: Path) -> Comparison:
 
 
 def _print_json(value: object) -> None:
-    click.echo(json.dumps(value, indent=1, allow_nan=False, ensure_ascii=False))
+    click.echo(json.dumps(value, indent=1, allow_nan=False))
 
 
 units_option = click.option(
@@ -112,6 +138,8 @@ def new(case_file: Path, force: bool) -> None:
     from retrofit.report.files import write_whole
 
     schema = case_file.parent / SCHEMA_FILE
+    if case_file.name == SCHEMA_FILE:
+        _fail(f"{SCHEMA_FILE} is the name of the schema written beside the case; choose another name", 2)
     if case_file.exists() and not force:
         _fail(f"{case_file} is there already; choose another name or add --force", 1)
     write_whole(case_file, new_case_text())

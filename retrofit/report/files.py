@@ -18,8 +18,11 @@ def write_whole(path: Path, text: str) -> None:
         text: Its content.
     Raises: ReportError if the folder is missing or cannot be written, or the path is a folder.
     """
+    path = path.resolve()  # what a link points to is replaced, not the link
     if path.is_dir():
         raise ReportError(f"{path} is a folder; name a file")
+    if path.exists() and not path.is_file():
+        raise ReportError(f"{path} is no ordinary file, and cannot be written whole or not at all; name a file")
     try:
         handle, name = tempfile.mkstemp(prefix=".half-", dir=path.parent)
     except OSError as error:

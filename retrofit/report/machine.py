@@ -50,7 +50,7 @@ def _entry(entry: Entry) -> dict[str, Any]:
         **gwp_values(entry.refrigerant),
         "model": _grade(entry.grade),
         "duty": _performance(entry.duty, entry.points),
-        "compressor": _performance(entry.compressor, ()),
+        "compressor": _performance(entry.compressor, entry.points),
         "plant": None,
         "relative": dict(entry.relative) or None,
         "T_discharge_difference_K": entry.T_discharge_difference_K,
@@ -80,8 +80,7 @@ def _grade(grade: Grade | None) -> dict[str, Any] | None:
 def _performance(found: Performance[float] | None, points: tuple[Point, ...]) -> dict[str, Any] | None:
     if found is None:
         return None
-    numbers: dict[str, Any] = asdict(found)
-    return numbers | {"states": [asdict(point) for point in points]} if points else numbers
+    return asdict(found) | {"states": [asdict(point) for point in points]}
 
 
 def comparison_csv(comparison: Comparison) -> str:

@@ -10,7 +10,7 @@ from retrofit.errors import QuantityError
 from retrofit.refrigerants import Caution, cautions_for
 from retrofit.report.text_table import Column, paragraph, text_table
 from retrofit.study.saturation import SaturationRow, SaturationTable
-from retrofit.units import STANDARD_ATMOSPHERE_PA, UnitSystem, parse_quantity
+from retrofit.units import STANDARD_ATMOSPHERE_PA, UnitSystem, parse_quantity, quoted
 
 MOST_ROWS = 5000
 
@@ -22,18 +22,20 @@ def temperature_steps(start: str, stop: str, step: str) -> list[float]:
         start: First temperature, as text with its unit.
         stop: Last temperature, as text with its unit.
         step: Temperature difference, as text with its unit.
-    Raises: QuantityError if a text is no such quantity, the step is not above 0 K, the temperatures fall, or
-        there would be more than `MOST_ROWS` rows.
+    Raises: QuantityError if a text is no such quantity, the step is not above 0 K, the temperatures fall or
+        lie below absolute zero, or there would be more than `MOST_ROWS` rows.
     """
     first, last = (parse_quantity(text, "temperature") for text in (start, stop))
     width = parse_quantity(step, "temperature difference")
     if width <= 0.0:
-        raise QuantityError(f'step "{step}" is not above 0 K; give for example "1 K"')
+        raise QuantityError(f'step {quoted(step)} is not above 0 K; give for example "1 K"')
     if last < first:
-        raise QuantityError(f'"{stop}" is below "{start}"; give the lower temperature with --from')
+        raise QuantityError(f"{quoted(stop)} is below {quoted(start)}; give the lower temperature with --from")
+    if first <= 0.0:
+        raise QuantityError(f"{quoted(start)} is not above absolute zero; give a temperature of a plant with --from")
+    if (last - first) / width >= MOST_ROWS:
+        raise QuantityError(f"these make more than the {MOST_ROWS} rows that are printed; give a larger --step")
     count = int((last - first) / width + 1e-9) + 1
-    if count > MOST_ROWS:
-        raise QuantityError(f'"{start}" to "{stop}" by "{step}" makes {count} rows; at most {MOST_ROWS} are printed')
     return [first + i * width for i in range(count)]
 
 
