@@ -29,7 +29,6 @@ FIELDS = (
     ("odp", "ODP", "{:g}"),
     *((basis, f"GWP, {label}", "") for basis, label in GWP_BASES.items()),
     ("lubricants", "Usual lubricants", "{}"),
-    ("typical_use", "Typical use", "{}"),
 )
 
 
@@ -113,8 +112,7 @@ def catalogue_text(refrigerants: Iterable[Refrigerant], strong: Callable[[str], 
 
 
 def _list_row(item: Refrigerant) -> list[str]:
-    names, shares = zip(*item.composition, strict=True)
-    composition = f"{'/'.join(names)} {'/'.join(f'{100 * share:.4g}' for share in shares)}" if len(names) > 1 else ""
+    composition = _composition(item)
     return [
         item.designation,
         class_text(item),
@@ -123,6 +121,12 @@ def _list_row(item: Refrigerant) -> list[str]:
         _celsius(item.dew_1atm_K),
         marked(composition, item.composition_mass_pct) if composition else "",
     ]
+
+
+def _composition(item: Refrigerant) -> str:
+    """Return components and mass per cent of a blend as the trade writes them; empty for a single substance."""
+    names, shares = zip(*item.composition, strict=True)
+    return f"{'/'.join(names)} {'/'.join(f'{100 * share:.4g}' for share in shares)}" if len(names) > 1 else ""
 
 
 MARK = "*"
@@ -161,7 +165,7 @@ def refrigerant_text(item: Refrigerant, columns: int, strong: Callable[[str], st
         columns: Width to wrap prose to. [characters]
         strong: How a heading is set off.
     """
-    title = strong(f"{item.designation}{'  ' + item.chemical_name if item.chemical_name else ''}")
+    title = strong("  ".join(part for part in (item.designation, item.chemical_name or _composition(item)) if part))
     cautions = [
         paragraph(f"{caution.level.upper()}  {caution.title}. {caution.text}", columns, indent="  ", first="")
         for caution in cautions_for(item)
@@ -173,9 +177,13 @@ def refrigerant_text(item: Refrigerant, columns: int, strong: Callable[[str], st
         for name, label, _ in FIELDS
         if getattr(item, name).note
     ]
-    keys = sorted({part.strip() for row in rows for part in row[3].split(";") if part.strip()})
+    _, use, use_basis, use_source = _detail_row("Typical use", item.typical_use, "{}")
+    named = [*(row[3] for row in rows), use_source]
+    keys = sorted({part.strip() for keys in named for part in keys.split(";") if part.strip()})
     sources = [paragraph(f"{key}: {_source_text(key)}", columns, indent="  ", first="") for key in keys]
-    parts = [title, *cautions, "", text_table(heads, rows)]
+    origin = f" ({use_basis}; {use_source})" if use_source else ""
+    use = f"Typical use: {use}{origin}"
+    parts = [title, *cautions, "", text_table(heads, rows), "", paragraph(use, columns, indent="  ", first="")]
     parts += ["", strong("Notes and disputes"), *notes] if notes else []
     return "\n".join([*parts, "", strong("Sources"), *sources])
 
