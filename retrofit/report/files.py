@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import contextlib
 import os
+import stat
 import tempfile
 from pathlib import Path
 
@@ -16,12 +17,17 @@ def write_whole(path: Path, text: str) -> None:
     Args:
         path: File to write; one that is there is replaced.
         text: Its content.
-    Raises: ReportError if the folder is missing or cannot be written, or the path is a folder.
+    Raises: ReportError if the folder is missing or cannot be written, or the path is no
+        ordinary file.
     """
     path = path.resolve()  # what a link points to is replaced, not the link
-    if path.is_dir():
+    try:
+        kind = stat.S_IFMT(path.stat().st_mode) if path.exists() else stat.S_IFREG
+    except OSError as error:
+        raise ReportError(f"{path} cannot be written: {error.strerror}; choose another name") from error
+    if kind == stat.S_IFDIR:
         raise ReportError(f"{path} is a folder; name a file")
-    if path.exists() and not path.is_file():
+    if kind != stat.S_IFREG:
         raise ReportError(f"{path} is no ordinary file, and cannot be written whole or not at all; name a file")
     try:
         handle, name = tempfile.mkstemp(prefix=".half-", dir=path.parent)
