@@ -37,7 +37,7 @@ def comparison_text(comparison: Comparison, units: UnitSystem, columns: int, str
         *_cautions(comparison, columns, strong),
         *_tables(comparison, units, strong),
         _findings(comparison, columns, strong),
-        _small_print(comparison, columns, strong),
+        _small_print(comparison, units, columns, strong),
     ]
     return "\n\n".join(part for part in parts if part)
 
@@ -49,7 +49,8 @@ def _head(comparison: Comparison, units: UnitSystem, columns: int, strong: Empha
         f"condensing {units.with_unit('temperature', duty.T_cond_K)} ({duty.reading}), "
         f"cooling {units.with_unit('cooling', duty.cooling_W)}"
     )
-    return "\n".join([strong(shown(comparison.case.title, 200)), paragraph(line, columns)])
+    basis = paragraph(f"{convention(comparison).capitalize()}.", columns)
+    return "\n".join([strong(shown(comparison.case.title, 200)), paragraph(line, columns), basis])
 
 
 def _answer(found: Answer, columns: int) -> str:
@@ -193,13 +194,14 @@ def _findings(comparison: Comparison, columns: int, strong: Emphasis) -> str:
     return "\n".join(lines)
 
 
-def _small_print(comparison: Comparison, columns: int, strong: Emphasis) -> str:
+def _small_print(comparison: Comparison, units: UnitSystem, columns: int, strong: Emphasis) -> str:
     bands = model_band()
+    discharge = units.with_unit("temperature difference", bands["T_discharge"].value, decimals=0)
     case = comparison.case
     assumed = [f"{item.key} = {item.shown_text}" for item in case.defaults]
     parts = [
         f"Accuracy: capacity ±{bands['capacity'].value:.0%}, COP ±{bands['cop'].value:.0%}, discharge "
-        f"±{bands['T_discharge'].value:.0f} K, pressures ±{bands['pressure'].value:.0%}; {NEAR} marks a difference "
+        f"±{discharge}, pressures ±{bands['pressure'].value:.0%}; {NEAR} marks a difference "
         "inside the band: no meaningful difference.",
         f"Assumed, not in the case: {listed(assumed, 'and')}." if assumed else "",
         "Not checked: " + "; ".join(not_checked()) + ".",
