@@ -21,7 +21,7 @@ def overlay_charts(comparison: Comparison, units: UnitSystem) -> tuple[Drawing, 
     Args:
         comparison: The result.
         units: The reader's units.
-    Returns: One chart for up to six candidates, else several with the same axes; none if nothing was computed.
+    Returns: One chart for up to six candidates, else several, each with the existing one; none if nothing was computed.
     """
     solved = [(place, entry) for place, entry in enumerate(comparison.entries) if entry.lines is not None]
     if not solved:
@@ -32,19 +32,13 @@ def overlay_charts(comparison: Comparison, units: UnitSystem) -> tuple[Drawing, 
     count = max(1, -(-len(candidates) // TOGETHER))
     share = -(-len(candidates) // count) if candidates else 1
     groups = [existing + candidates[i * share : (i + 1) * share] for i in range(count)]
-    box = _limits([entry for _, entry in solved], units)
-    return tuple(_overlay(comparison, group, units, box, i) for i, group in enumerate(groups))
+    return tuple(_overlay(comparison, group, units, number) for number, group in enumerate(groups))
 
 
-def _overlay(
-    comparison: Comparison,
-    group: list[tuple[int, Entry]],
-    units: UnitSystem,
-    box: tuple[tuple[float, float], tuple[float, float]],
-    number: int,
-) -> Drawing:
+def _overlay(comparison: Comparison, group: list[tuple[int, Entry]], units: UnitSystem, number: int) -> Drawing:
+    box = _limits([entry for _, entry in group], units)
     names = ", ".join(entry.refrigerant.display_name for _, entry in group)
-    with canvas(4.6) as figure:
+    with canvas(4.6, 0.56, 1.12, 0.08, 0.44) as figure:
         axes = _axes(figure, units, box)
         for place, entry in group:
             mark = mark_of(place)
@@ -83,7 +77,7 @@ def cycle_chart(comparison: Comparison, place: int, units: UnitSystem) -> Drawin
     if entry.lines is None:
         return None
     mark, label, box = mark_of(place), entry.refrigerant.display_name, _limits([entry], units)
-    with canvas(3.4) as figure:
+    with canvas(3.4, 0.56, 0.08, 0.08, 0.44) as figure:
         axes = _axes(figure, units, box)
         _dome(axes, entry.lines, units, mark.colour, THIN)
         h, p = _closed(entry, units)
@@ -184,11 +178,11 @@ def _end_labels(axes: Any, group: list[tuple[int, Entry]], units: UnitSystem) ->
     low, high = (np.log(value) for value in axes.get_ylim())
     wanted = [(np.log(p) - low) / (high - low) for p, *_ in ends]
     heights = _spread(wanted, 0.055)
-    for (p, h, place, label), height in zip(ends, heights, strict=True):
+    for (p_end, h_end, place, label), height in zip(ends, heights, strict=True):
         mark = mark_of(place)
         axes.annotate(
             label,
-            (h, p),
+            (h_end, p_end),
             (1.03, height),
             textcoords="axes fraction",
             va="center",

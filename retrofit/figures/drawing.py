@@ -35,12 +35,13 @@ class Drawing:
 
 
 @contextmanager
-def canvas(height_in: float, width_in: float = PAGE_WIDTH_IN) -> Iterator[Any]:
+def canvas(height_in: float, left_in: float, right_in: float, top_in: float, bottom_in: float) -> Iterator[Any]:
     """Give a figure to draw on, alone: one drawing at a time in the whole process.
 
     Args:
         height_in: Height of the figure. [in]
-        width_in: Width of the figure. [in]
+        left_in, right_in, top_in, bottom_in: Margins around the axes, given here because finding them costs as
+            much time as the drawing. [in]
     Returns: A context with the matplotlib Figure; it has to be turned into SVG inside of it.
     """
     from matplotlib import rc_context
@@ -48,7 +49,13 @@ def canvas(height_in: float, width_in: float = PAGE_WIDTH_IN) -> Iterator[Any]:
 
     settings: Any = LOOK
     with _DRAWING, rc_context(settings):
-        figure = Figure(figsize=(width_in, height_in), layout="constrained")
+        figure = Figure(figsize=(PAGE_WIDTH_IN, height_in))
+        figure.subplots_adjust(
+            left=left_in / PAGE_WIDTH_IN,
+            right=1.0 - right_in / PAGE_WIDTH_IN,
+            top=1.0 - top_in / height_in,
+            bottom=bottom_in / height_in,
+        )
         figure.patch.set_alpha(0.0)
         yield figure
 

@@ -12,7 +12,8 @@ from retrofit.study import Comparison, Entry
 from retrofit.units import UnitSystem, format_number
 
 KELVIN = 273.15
-ROW_IN, FRAME_IN = 0.235, 0.85
+ROW_IN, FRAME_IN = 0.235, 0.76
+MARGINS_IN = (0.9, 0.5, 0.26, 0.46)  # left, right, top, bottom
 
 
 def pressure_chart(comparison: Comparison, units: UnitSystem) -> Drawing:
@@ -28,7 +29,7 @@ def pressure_chart(comparison: Comparison, units: UnitSystem) -> Drawing:
     def gauge(p_Pa: float) -> float:
         return float(units.number("gauge pressure", p_Pa - plant.ambient_pressure_Pa))
 
-    with canvas(_height(comparison)) as figure:
+    with canvas(_height(comparison), *MARGINS_IN) as figure:
         axes = figure.subplots()
         for place, entry in _rows(axes, comparison):
             if entry.duty is None:
@@ -67,7 +68,7 @@ def discharge_chart(comparison: Comparison, units: UnitSystem) -> Drawing:
     def number(T_K: float) -> float:
         return float(units.number("temperature", T_K))
 
-    with canvas(_height(comparison)) as figure:
+    with canvas(_height(comparison), *MARGINS_IN) as figure:
         axes = figure.subplots()
         values = [number(entry.duty.T_discharge_K + sign * band) for entry in solved for sign in (-1, 1)]
         for level, side in ((limits.work, "right"), (limits.stop, "left")):
@@ -108,8 +109,8 @@ def change_chart(comparison: Comparison) -> Drawing:
         ("capacity", model_band()["capacity"].value, "Cooling, same compressor, against today [%]"),
         ("cop", model_band()["cop"].value, "COP against today [%]"),
     )
-    with canvas(_height(comparison)) as figure:
-        both = figure.subplots(1, 2, sharey=True)
+    with canvas(_height(comparison), *MARGINS_IN) as figure:
+        both = figure.subplots(1, 2, sharey=True, gridspec_kw={"wspace": 0.1})
         for axes, (name, band, label) in zip(both, panels, strict=True):
             axes.axvspan(-100 * band, 100 * band, color=INK, alpha=0.09, linewidth=0)
             axes.axvline(0.0, color=INK, linewidth=THIN)

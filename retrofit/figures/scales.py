@@ -53,9 +53,9 @@ def temperature_ticks(
     """
     low, high = axes.get_ylim()
     T = units.number("temperature", lines.T_K)
-    for h_line, p_line, side in (
-        (lines.h_bubble_J_per_kg, lines.p_bubble_Pa, -1),
-        (lines.h_dew_J_per_kg, lines.p_dew_Pa, 1),
+    for h_line, p_line in (
+        (lines.h_bubble_J_per_kg, lines.p_bubble_Pa),
+        (lines.h_dew_J_per_kg, lines.p_dew_Pa),
     ):
         h, p = enthalpies(lines, h_line, units), units.number("pressure", p_line)
         for value in _round_temperatures(T[(p > low) & (p < high)], units.name):
@@ -63,15 +63,9 @@ def temperature_ticks(
             axes.plot([at_h], [at_p], "_", color=INK, markersize=4, markeredgewidth=THIN)
             on_limit = limit is not None and abs(np.log(at_p / limit) / np.log(high / low)) < LABEL_SHARE[0]
             if not on_limit and _is_free(np.log(at_p / np.asarray(isobars)) / np.log(high / low)):
-                axes.annotate(
-                    f"{value:g}".replace("-", "\N{MINUS SIGN}"),
-                    (at_h, at_p),
-                    (5 * side, 0),
-                    textcoords="offset points",
-                    ha="right" if side < 0 else "left",
-                    va="center",
-                    fontsize=SMALL_PT,
-                )
+                text = f"{value:g}".replace("-", "\N{MINUS SIGN}")
+                axes.annotate(text, (at_h, at_p), (-5, 0), textcoords="offset points", ha="right", va="center",
+                              fontsize=SMALL_PT)  # fmt: skip
 
 
 def _is_free(heights: Any) -> bool:

@@ -176,7 +176,16 @@ def _values(comparison: Comparison, basis: str, name: str) -> list[float | None]
 
 
 def _quantity(label: str, kind: str, values: list[float | None], units: UnitSystem) -> Row:
+    if kind == "heat flow":  # in Btu/h its usual form has six digits, of which the model knows two
+        return number_row(label, units.label(kind), [_four_digits(kind, value, units) for value in values])
     return number_row(label, units.label(kind), units.column(kind, values))
+
+
+def _four_digits(kind: str, value: float | None, units: UnitSystem) -> str:
+    if value is None:
+        return MISSING
+    number = float(f"{float(units.number(kind, value)):.4g}")
+    return format_number(number, 0 if abs(number) >= 1000.0 else 1)
 
 
 def _change(label: str, comparison: Comparison, ratio: str, band: str) -> Row:

@@ -8,6 +8,7 @@ from pathlib import PurePath
 
 from retrofit import figures
 from retrofit.case import Case
+from retrofit.case.values import is_hidden
 from retrofit.checks import Answer, answer, model_band, not_checked
 from retrofit.report.cautioning import DEFERENCE, CautionGroup, caution_groups
 from retrofit.report.comparing import comparison_table, convention
@@ -119,13 +120,13 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
     solved = any(entry.duty is not None for entry in comparison.entries)
     return Page(
         policy=POLICY,
-        title=case.title,
-        title_css=css_string(case.title),
-        about=case.about or "",
+        title=plain(case.title),
+        title_css=css_string(plain(case.title)),
+        about=plain(case.about or ""),
         facts=_facts(comparison, units),
         units=SYSTEM_WORDS[units.name],
         made_at=_time(made_at),
-        case_file=PurePath(case.path).name,
+        case_file=plain(PurePath(case.path).name),
         versions=tuple(comparison.versions.items()),
         answer=answer(comparison, units),
         convention=convention(comparison),
@@ -155,6 +156,11 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
     )
 
 
+def plain(text: str) -> str:
+    """Return a text with characters that command or turn the writing round written out, such as \\x1b."""
+    return "".join(c.encode("unicode_escape").decode("ascii") if is_hidden(c) else c for c in text)
+
+
 def css_string(text: str) -> str:
     """Return a text fit to stand between the quotes of a CSS string: all but letters and digits as \\hex.
 
@@ -169,8 +175,8 @@ def band_text(units: UnitSystem) -> str:
     discharge = units.with_unit("temperature difference", band["T_discharge"].value, decimals=0)
     return (
         f"Band of the model: capacity ±{band['capacity'].value:.0%}, COP ±{band['cop'].value:.0%}, discharge "
-        f"temperature ±{discharge}, pressures ±{band['pressure'].value:.0%}. A difference inside the band is no meaningful "
-        "difference; in the tables it carries the sign ≈."
+        f"temperature ±{discharge}, pressures ±{band['pressure'].value:.0%}. A difference inside the band is no "
+        "meaningful difference; in the tables it carries the sign ≈."
     ).replace("%", "\N{NO-BREAK SPACE}%")
 
 

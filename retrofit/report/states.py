@@ -135,8 +135,8 @@ def hand_check(
         f"Evaporating pressure: find {T(7)} on the dew line (point 7) and read {p(7)}. The scale is logarithmic: read "
         "it by the temperature lines, going between two of them by temperature, and not by dividing the space evenly.",
         f"Superheat: go horizontally to the right, at constant pressure, to {T(8)} at the evaporator outlet (point 8) "
-        f"and on to {T(1)} at the compressor inlet (point 1). From each go vertically to the enthalpy scale: {h(8)} and "
-        f"{h(1)}.",
+        f"and on to {T(1)} at the compressor inlet (point 1). From each go vertically to the enthalpy scale: {h(8)} "
+        f"and {h(1)}.",
         f"Compression: from point 1 follow the line of constant entropy up to {p(2)}; it meets {ideal} there. Divide "
         f"the rise in enthalpy so far by the isentropic efficiency, {efficiency}, and add it to that of point 1: point "
         f"2 has {h(2)} and {T(2)}.",

@@ -99,7 +99,7 @@ def doubts(value: Value) -> list[str]:
 
 def _potential(number: object) -> str:
     value = float(number)  # type: ignore[arg-type]
-    return format_number(value, 0 if value >= 10.0 or value == 0.0 else 1 if value >= 1.0 else 3)
+    return format_number(value, 0) if value >= 10.0 else f"{value:.3g}"
 
 
 def _plain(number: object) -> str:

@@ -1,0 +1,135 @@
+"""The report in a real browser: on a telephone, a desk, light and dark, on paper, for a screen reader."""
+
+import re
+
+import pytest
+
+pytestmark = pytest.mark.browser
+SHOWN = ["harbour-market", "freezer-store", "coast-heat-pump"]
+HEADINGS = [
+    "Question and answer", "Cautions by safety class", "Comparison on two bases", "Charts",
+    "Findings and verdict for each refrigerant", "State points, and how to check them by hand", "Assumptions",
+    "How far the model can be trusted", "Limits: what was not checked", "Terms", "Sources",
+]  # fmt: skip
+
+
+@pytest.fixture
+def opened(browser, tmp_path, page_of):
+    """Return a function that opens a shipped case's page; any request, error or console message fails the test."""
+    contexts, heard = [], []
+
+    def open_page(name, width=1280, scheme="light", units="si"):
+        path = tmp_path / f"{name}-{units}.html"
+        path.write_text(page_of(name, units), encoding="utf-8")
+        context = browser.new_context(viewport={"width": width, "height": 900}, color_scheme=scheme)
+        contexts.append(context)
+        page = context.new_page()
+        page.on("request", lambda request: heard.append(request.url))
+        page.on("console", lambda message: heard.append(message.text))
+        page.on("pageerror", lambda error: heard.append(str(error)))
+        page.goto(path.as_uri())
+        heard.remove(path.as_uri())
+        return page
+
+    yield open_page
+    for context in contexts:
+        context.close()
+    assert heard == []
+
+
+@pytest.mark.parametrize("name", SHOWN)
+@pytest.mark.parametrize("width", [320, 390, 1280])
+def test_the_page_does_not_scroll_sideways(name, width, opened):
+    """Only boxes of tables and figures are wider than the window, and those scroll by themselves."""
+    page = opened(name, width)
+
+    assert page.evaluate("document.scrollingElement.scrollWidth") <= width
+    assert page.evaluate("document.body.scrollWidth") <= width
+
+
+def test_boxes_that_scroll_can_be_reached_by_the_keyboard(opened):
+    """At 320 px each box wider than the window has a name, a role and a place in the tab order."""
+    page = opened("harbour-market", 320)
+    boxes = page.evaluate(
+        """[...document.querySelectorAll('.scroll')].filter(b => b.scrollWidth > b.clientWidth)
+           .map(b => [b.tabIndex, b.getAttribute('role'), b.getAttribute('aria-label')])"""
+    )
+
+    assert len(boxes) > 5
+    assert all(tab == 0 and role == "region" and label for tab, role, label in boxes)
+
+
+@pytest.mark.parametrize("name", SHOWN)
+@pytest.mark.parametrize(("width", "scheme"), [(320, "light"), (1280, "light"), (1280, "dark")])
+def test_the_accessibility_checker_finds_nothing(name, width, scheme, opened):
+    """axe finds no violation on a telephone and on a desk, light and dark."""
+    from axe_playwright_python.sync_playwright import Axe
+
+    found = Axe().run(opened(name, width, scheme)).response
+
+    assert [(item["id"], item["nodes"][0]["html"][:90]) for item in found["violations"]] == []
+    assert len(found["passes"]) > 15
+
+
+@pytest.mark.parametrize("scheme", ["light", "dark"])
+def test_text_in_figures_has_the_colour_of_the_page_s_own_text(scheme, opened):
+    """Words and axes follow the reader's mode."""
+    page = opened("harbour-market", 1280, scheme)
+    text, figure, paper = page.evaluate(
+        """[getComputedStyle(document.body).color, getComputedStyle(document.querySelector('svg text')).fill,
+            getComputedStyle(document.body).backgroundColor]"""
+    )
+
+    assert text == figure
+    assert paper == {"light": "rgb(255, 255, 255)", "dark": "rgb(18, 18, 18)"}[scheme]
+
+
+def test_the_cautions_are_on_the_screen(opened):
+    """The block of cautions and each of its texts have a size and are not see-through."""
+    page = opened("coast-heat-pump", 390)
+    sizes = page.evaluate(
+        """[...document.querySelectorAll('#cautions .caution-text')].map(e => {
+            const box = e.getBoundingClientRect(), style = getComputedStyle(e);
+            return [box.width, box.height, style.visibility, style.opacity]})"""
+    )
+
+    assert len(sizes) > 4
+    assert all(
+        width > 200 and height > 30 and seen == "visible" and opacity == "1" for width, height, seen, opacity in sizes
+    )
+
+
+@pytest.mark.parametrize("format_", ["A4", "Letter"])
+@pytest.mark.parametrize("name", SHOWN)
+def test_it_prints_on_either_paper(name, format_, opened, assessed):
+    """The print has a page or so for each refrigerant and some for the rest, in the size asked for."""
+    pdf = opened(name, 1280, "dark").pdf(format=format_)
+    count = len(re.findall(rb"/Type\s*/Page\b", pdf))
+    width, height = map(float, re.search(rb"/MediaBox\s*\[0 0 ([0-9.]+) ([0-9.]+)\]", pdf).groups())
+    refrigerants = len(assessed(name).entries)
+
+    assert refrigerants + 6 <= count <= 2 * refrigerants + 14
+    assert (width, height) == pytest.approx({"A4": (595.0, 842.0), "Letter": (612.0, 792.0)}[format_], abs=1.5)
+
+
+def test_the_print_has_every_heading_and_no_content_beyond_the_page(opened):
+    """In print all sections are there in order, the page list is left out, and nothing is wider than an A4 page."""
+    page = opened("harbour-market", 688)  # 182 mm, the width between the margins of A4
+    page.emulate_media(media="print")
+    headings = page.evaluate("[...document.querySelectorAll('h2')].map(h => h.innerText.trim())")
+    widest = page.evaluate(
+        "Math.max(...[...document.querySelectorAll('table, svg, p')].map(e => e.getBoundingClientRect().right))"
+    )
+
+    assert [re.sub(r"^\d+\s*", "", heading) for heading in headings] == HEADINGS
+    assert page.evaluate("getComputedStyle(document.querySelector('nav')).display") == "none"
+    assert widest <= 689
+
+
+def test_print_is_light_whatever_the_reader_s_mode(opened):
+    """A dark screen prints dark ink on white paper."""
+    page = opened("harbour-market", 800, "dark")
+    page.emulate_media(media="print", color_scheme="dark")
+
+    assert page.evaluate("getComputedStyle(document.body).color") == "rgb(0, 0, 0)"
+    assert page.evaluate("getComputedStyle(document.body).backgroundColor") == "rgb(255, 255, 255)"
