@@ -18,6 +18,7 @@ from retrofit.errors import NoSolutionError, OutsideValidRangeError
 from retrofit.properties import Fluid
 
 KELVIN = 273.15
+CONVENTIONS = ("dew", "mean")
 MOST_STEPS = 40
 CLOSE_ENOUGH_K = 1e-10
 
@@ -34,6 +35,10 @@ class Temperatures:
     T_evap_K: ArrayLike
     T_cond_K: ArrayLike
     convention: str
+
+    def __post_init__(self) -> None:
+        if self.convention not in CONVENTIONS:
+            raise ValueError(f"convention {self.convention!r} is neither of {CONVENTIONS}")
 
 
 def cycle_temperatures(cycle: Cycle, convention: str) -> Temperatures:
