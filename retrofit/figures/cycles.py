@@ -57,7 +57,7 @@ def _overlay(comparison: Comparison, group: list[tuple[int, Entry]], units: Unit
         described = "; ".join(_cycle_words(entry, units) for _, entry in group)
         svg = to_svg(figure, name, title, described)
     caption = (
-        f"Cycles of {names} on the same axes, pressure on a logarithmic scale. The thick black cycle is today's"
+        f"Cycles of {names} on the same axes, pressure on a logarithmic scale. The thick cycle is today's"
         if group[0][0] == 0
         else f"Cycles of {names} on the same axes, pressure on a logarithmic scale"
     )

@@ -14,6 +14,7 @@ from retrofit.units import UnitSystem, format_number
 KELVIN = 273.15
 ROW_IN, FRAME_IN = 0.235, 0.76
 MARGINS_IN = (0.9, 0.5, 0.26, 0.46)  # left, right, top, bottom
+PAIR = (30, 64)  # where two columns in the right margin end [pt]
 
 
 def pressure_chart(comparison: Comparison, units: UnitSystem) -> Drawing:
@@ -29,7 +30,8 @@ def pressure_chart(comparison: Comparison, units: UnitSystem) -> Drawing:
     def gauge(p_Pa: float) -> float:
         return float(units.number("gauge pressure", p_Pa - plant.ambient_pressure_Pa))
 
-    with canvas(_height(comparison), *MARGINS_IN) as figure:
+    left, right, top, bottom = MARGINS_IN
+    with canvas(_height(comparison), left, right + 0.5, top, bottom) as figure:
         axes = figure.subplots()
         for place, entry in _rows(axes, comparison):
             if entry.duty is None:
@@ -37,13 +39,15 @@ def pressure_chart(comparison: Comparison, units: UnitSystem) -> Drawing:
             mark, ends = mark_of(place), (gauge(entry.duty.p_evap_Pa), gauge(entry.duty.p_cond_Pa))
             axes.plot(ends, (place, place), color=mark.colour, linewidth=mark.width * 0.7)
             axes.plot(ends, (place, place), mark.marker, color=mark.colour, markersize=5.5, linestyle="none")
-            _value(axes, ends[0], place, _short(ends[0]), -1)
-            _margin_value(axes, place, f"{_short(ends[1])}")
+            for value, column in zip(ends, PAIR, strict=True):
+                _margin_value(axes, place, _short(value), column)
         values = [gauge(p) for entry in _solved(comparison) for p in (entry.duty.p_evap_Pa, entry.duty.p_cond_Pa)]
         if plant.high_side_limit_Pa is not None:
             limit = gauge(plant.high_side_limit_Pa)
             values.append(limit)
             _limit(axes, limit, f"nameplate {_short(limit)}", "center")
+        for word, column in zip(("evap.", "cond."), PAIR, strict=True):
+            _margin_value(axes, -0.95, word, column)
         axes.axvline(0.0, color=INK, linewidth=HAIRLINE)
         _wide(axes, values, 0.12)
         axes.set_xlabel(f"Evaporating (left) and condensing (right) pressure, gauge [{label}]")
@@ -92,7 +96,7 @@ def discharge_chart(comparison: Comparison, units: UnitSystem) -> Drawing:
         svg = to_svg(figure, "discharge", "Discharge temperatures", described)
     width = units.with_unit("temperature difference", band, decimals=0)
     caption = (
-        f"Discharge temperature; the line through each mark is the band of the model, ±{width}. The dashed lines are "
+        f"Discharge temperature; the line through each mark is the band of the model, ±{width}. The thin vertical line is today's. The dashed lines are "
         "the levels of the checks, not a maker's limits: the maker's written limit goes before them."
     )
     return Drawing("discharge", svg, caption, described)
@@ -174,9 +178,9 @@ def _value(axes: Any, x: float, y: float, text: str, side: int) -> None:
                   ha="left" if side > 0 else "right", fontsize=LABEL_PT)  # fmt: skip
 
 
-def _margin_value(axes: Any, y: float, text: str) -> None:
+def _margin_value(axes: Any, y: float, text: str, right_pt: float = 28) -> None:
     """Write a value in the right margin, where no limit line runs through it."""
-    axes.annotate(text, (1.0, y), (28, 0), xycoords=("axes fraction", "data"), textcoords="offset points",
+    axes.annotate(text, (1.0, y), (right_pt, 0), xycoords=("axes fraction", "data"), textcoords="offset points",
                   va="center", ha="right", fontsize=LABEL_PT, annotation_clip=False)  # fmt: skip
 
 

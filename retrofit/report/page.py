@@ -9,50 +9,29 @@ from pathlib import PurePath
 from retrofit import figures
 from retrofit.case import Case
 from retrofit.case.values import is_hidden
-from retrofit.checks import Answer, answer, model_band, not_checked
+from retrofit.checks import answer, model_band, not_checked
 from retrofit.report.cautioning import DEFERENCE, CautionGroup, caution_groups
 from retrofit.report.comparing import comparison_table, convention
 from retrofit.report.guard import POLICY
 from retrofit.report.inputs import FIXED, Input, Taken, defaults, inputs, missing
+from retrofit.report.judging import Judged, Shared, judged, spelled, threshold_sources
 from retrofit.report.states import Portrait, enthalpy_note, portraits
 from retrofit.report.table import Table
 from retrofit.report.values import UsedSource, environment_table, used_sources
-from retrofit.study import Comparison, Entry, Finding
-from retrofit.units import MISSING, UnitSystem, listed
+from retrofit.study import Comparison, Entry
+from retrofit.units import MISSING, UnitSystem
 
-LEVEL_WORDS = {"stop": "Stop", "work": "Work", "unknown": "Unknown", "note": "Note"}
 SYSTEM_WORDS = {"si": "metric units", "ip": "inch-pound units"}
-SHARED_BY = 3  # refrigerants with a finding in the same words: it is then written out once for all
-FAMILY_WORDS = {
-    "keep": "in the plant today",
-    "convert": "conversion of this plant",
-    "replace": "by default a new plant, built for its class",
-}
 
 
 @dataclass(frozen=True)
-class Judged:
-    """A refrigerant with its verdict and findings; `reasons` is the short form for the summary.
+class Answered:
+    """The answer as texts; each matter is a heading with groups of words and the candidates they are true of."""
 
-    `findings` are its own; `shared` are the titles of those that stand in the same words for others too.
-    """
-
-    place: int
-    name: str
-    safety_class: str
-    family: str
-    verdict: str
-    reasons: str
-    findings: tuple[Finding, ...]
-    shared: tuple[str, ...]
-
-
-@dataclass(frozen=True)
-class SharedFinding:
-    """A finding in the same words for several refrigerants."""
-
-    finding: Finding
-    about: str
+    question: str
+    headline: str
+    matters: tuple[tuple[str, tuple[tuple[str, tuple[str, ...]], ...]], ...]
+    remarks: tuple[str, ...]
 
 
 @dataclass(frozen=True)
@@ -80,12 +59,12 @@ class Page:
     made_at: str
     case_file: str
     versions: tuple[tuple[str, str], ...]
-    answer: Answer
+    answer: Answered
     convention: str
     band: str
     judged: tuple[Judged, ...]
     existing: Judged
-    shared: tuple[SharedFinding, ...]
+    shared: tuple[Shared, ...]
     deference: str
     cautions: tuple[CautionGroup, ...]
     comparison: Table
@@ -104,7 +83,6 @@ class Page:
     sources: tuple[UsedSource, ...]
     check_sources: tuple[str, ...]
     not_checked: tuple[str, ...]
-    level_words: dict[str, str]
 
 
 def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> Page:
@@ -116,7 +94,7 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
         made_at: The time to print.
     """
     case = comparison.case
-    shared = _shared(comparison)
+    (existing, *candidates), shared = judged(comparison)
     solved = any(entry.duty is not None for entry in comparison.entries)
     return Page(
         policy=POLICY,
@@ -128,12 +106,12 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
         made_at=_time(made_at),
         case_file=plain(PurePath(case.path).name),
         versions=tuple(comparison.versions.items()),
-        answer=answer(comparison, units),
+        answer=_answer(comparison, units),
         convention=convention(comparison),
         band=band_text(units),
-        judged=tuple(_judged(place, entry, shared) for place, entry in enumerate(comparison.entries) if place),
-        existing=_judged(0, comparison.existing, shared),
-        shared=tuple(SharedFinding(finding, ", ".join(names)) for finding, names in shared.items()),
+        judged=tuple(candidates),
+        existing=existing,
+        shared=shared,
         deference=DEFERENCE,
         cautions=caution_groups(comparison),
         comparison=comparison_table(comparison, units),
@@ -150,9 +128,8 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
         difference_unit=units.label("temperature difference"),
         temperature_unit=units.label("temperature"),
         sources=used_sources(comparison),
-        check_sources=_check_sources(comparison),
+        check_sources=threshold_sources(comparison),
         not_checked=not_checked(),
-        level_words=LEVEL_WORDS,
     )
 
 
@@ -173,11 +150,21 @@ def band_text(units: UnitSystem) -> str:
     """Return the band of the model in one sentence."""
     band = model_band()
     discharge = units.with_unit("temperature difference", band["T_discharge"].value, decimals=0)
-    return (
+    return spelled(
         f"Band of the model: capacity ±{band['capacity'].value:.0%}, COP ±{band['cop'].value:.0%}, discharge "
         f"temperature ±{discharge}, pressures ±{band['pressure'].value:.0%}. A difference inside the band is no "
         "meaningful difference; in the tables it carries the sign ≈."
-    ).replace("%", "\N{NO-BREAK SPACE}%")
+    )
+
+
+def _answer(comparison: Comparison, units: UnitSystem) -> Answered:
+    found = answer(comparison, units)
+    matters = tuple(
+        (spelled(matter.about), tuple((spelled(words), tuple(map(spelled, names))) for words, names in matter.groups))
+        for matter in found.matters
+    )
+    remarks = tuple(spelled(remark) for remark in found.remarks)
+    return Answered(spelled(found.question), spelled(found.headline), matters, remarks)
 
 
 def _facts(comparison: Comparison, units: UnitSystem) -> tuple[tuple[str, str], ...]:
@@ -204,37 +191,6 @@ def _charts(comparison: Comparison, units: UnitSystem) -> tuple[figures.Drawing,
     )
 
 
-def _shared(comparison: Comparison) -> dict[Finding, list[str]]:
-    """Return the findings that stand in the same words for many refrigerants, with their names."""
-    found: dict[Finding, list[str]] = {}
-    for entry in comparison.entries:
-        for finding in entry.findings:
-            found.setdefault(finding, []).append(entry.refrigerant.display_name)
-    return {finding: names for finding, names in found.items() if len(names) >= SHARED_BY}
-
-
-def _judged(place: int, entry: Entry, shared: dict[Finding, list[str]]) -> Judged:
-    return Judged(
-        place,
-        entry.refrigerant.display_name,
-        entry.refrigerant.safety_class.text or "not stated",
-        FAMILY_WORDS[entry.family],
-        entry.verdict or "not judged",
-        _reasons(entry),
-        tuple(finding for finding in entry.findings if finding not in shared),
-        tuple(f.title for f in entry.findings if f in shared),
-    )
-
-
-def _reasons(entry: Entry) -> str:
-    """Return the titles of the findings that decide the verdict, or the work if nothing stands against it."""
-    for level in ("stop", "unknown", "work"):
-        titles = [finding.title for finding in entry.findings if finding.level == level]
-        if titles:
-            return "; ".join(titles)
-    return "nothing found by the checks made here"
-
-
 def _graded(entry: Entry, units: UnitSystem) -> Graded:
     name, grade = entry.refrigerant.display_name, entry.grade
     if grade is None:
@@ -246,17 +202,6 @@ def _graded(entry: Entry, units: UnitSystem) -> Graded:
     pairs = "; ".join(f"R-{a[1:]} with R-{b[1:]}" for a, b in grade.estimated_pairs)
     end = units.text("temperature", entry.T_limit_K, decimals=0, missing="not stated")
     return Graded(name, grade.word, bubble, dew, pairs or "none", end)
-
-
-def _check_sources(comparison: Comparison) -> tuple[str, ...]:
-    """Return where the thresholds of the findings come from, each once, with what it was used for."""
-    found: dict[str, list[str]] = {}
-    for entry in comparison.entries:
-        for finding in entry.findings:
-            titles = found.setdefault(finding.source, [])
-            if finding.title not in titles:
-                titles.append(finding.title)
-    return tuple(f"{listed(titles, 'and')}: {source}" for source, titles in found.items() if source)
 
 
 def _time(made_at: datetime) -> str:

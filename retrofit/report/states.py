@@ -154,11 +154,11 @@ def hand_check(
 def enthalpy_note(units: UnitSystem) -> str:
     """Return what has to be known about the zero of the enthalpy scale."""
     reference = {
-        "si": "IIR reference, h = 200 kJ/kg and s = 1 kJ/(kg K) for saturated liquid at 0 °C",
+        "si": "the IIR reference, h = 200 kJ/kg and s = 1 kJ/(kg K) for saturated liquid at 0 °C",
         "ip": "h = 0 and s = 0 for saturated liquid at \N{MINUS SIGN}40 °F",
     }[units.name]
     return (
-        f"Enthalpies are counted from the {reference}, for each refrigerant by itself. Only differences along one "
+        f"Enthalpies are counted from {reference}, for each refrigerant by itself. Only differences along one "
         "refrigerant mean anything: that one cycle stands further right than another says nothing. A chart with "
         "another reference shows every enthalpy shifted by the same amount."
     )

@@ -1,0 +1,145 @@
+"""Verdicts and findings for a reader: what decides, each finding with its fact, and advice written once."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Mapping
+from dataclasses import dataclass
+
+from retrofit.refrigerants import source
+from retrofit.study import Comparison, Entry, Finding
+from retrofit.units import listed
+
+LEVEL_WORDS = {"stop": "Stop", "work": "Work", "unknown": "Unknown", "note": "Note"}
+FAMILY_WORDS = {
+    "keep": "in the plant today",
+    "convert": "conversion of this plant",
+    "replace": "by default a new plant, built for its class",
+}
+SHARED_BY = 3  # refrigerants with the same advice: it is then written once, except about a stop
+
+Subject = tuple[str, str, str, str]  # level, title, advice, source
+
+
+@dataclass(frozen=True)
+class Found:
+    """A finding of one refrigerant; `advice` and `source` are empty if they stand under `shared` instead."""
+
+    level: str
+    word: str
+    title: str
+    fact: str
+    advice: str
+    source: str
+    shared: int | None
+
+
+@dataclass(frozen=True)
+class Judged:
+    """A refrigerant with its verdict and findings; `reasons` is the short form for the summary."""
+
+    place: int
+    name: str
+    safety_class: str
+    family: str
+    verdict: str
+    reasons: str
+    findings: tuple[Found, ...]
+
+
+@dataclass(frozen=True)
+class Shared:
+    """What to do about a finding of several refrigerants."""
+
+    number: int
+    level: str
+    word: str
+    title: str
+    advice: str
+    source: str
+    about: str
+
+
+def spelled(text: str) -> str:
+    """Return a text as readers know it: designations with a hyphen, and a blank before the percent sign."""
+    return re.sub(r"(?<=[0-9])%", "\N{NO-BREAK SPACE}%", re.sub(r"\bR(?=[0-9])", "R-", text))
+
+
+def judged(comparison: Comparison) -> tuple[tuple[Judged, ...], tuple[Shared, ...]]:
+    """Return every refrigerant with verdict and findings, the existing one first, and the advice they share.
+
+    Args:
+        comparison: An assessed result.
+    """
+    names = _names(comparison)
+    numbers = {
+        subject: number
+        for number, subject in enumerate(
+            subject for subject, about in names.items() if len(about) >= SHARED_BY and subject[0] != "stop"
+        )
+    }
+    shared = tuple(
+        Shared(number, level, LEVEL_WORDS[level], title, advice, origin, ", ".join(names[level, title, advice, origin]))
+        for (level, title, advice, origin), number in numbers.items()
+    )
+    return tuple(_judged(place, entry, numbers) for place, entry in enumerate(comparison.entries)), shared
+
+
+def threshold_sources(comparison: Comparison) -> tuple[str, ...]:
+    """Return where the thresholds of the findings come from, each once, with what it was used for."""
+    found: dict[str, list[str]] = {}
+    for entry in comparison.entries:
+        for finding in entry.findings:
+            titles = found.setdefault(_source(finding), [])
+            if (title := spelled(finding.title)) not in titles:
+                titles.append(title)
+    return tuple(f"{listed(titles, 'and')}: {origin}" for origin, titles in found.items() if origin)
+
+
+def _names(comparison: Comparison) -> dict[Subject, list[str]]:
+    found: dict[Subject, list[str]] = {}
+    for entry in comparison.entries:
+        for finding in entry.findings:
+            found.setdefault(_subject(finding), []).append(entry.refrigerant.display_name)
+    return found
+
+
+def _subject(finding: Finding) -> Subject:
+    return finding.level, spelled(finding.title), spelled(finding.advice), _source(finding)
+
+
+def _source(finding: Finding) -> str:
+    """Return where the threshold comes from; a key of the bibliography as the title it stands for."""
+    try:
+        return source(finding.source).title
+    except KeyError:
+        return finding.source
+
+
+def _judged(place: int, entry: Entry, numbers: Mapping[Subject, int]) -> Judged:
+    return Judged(
+        place,
+        entry.refrigerant.display_name,
+        entry.refrigerant.safety_class.text or "not stated",
+        FAMILY_WORDS[entry.family],
+        entry.verdict or "not judged",
+        _reasons(entry),
+        tuple(_found(finding, numbers) for finding in entry.findings),
+    )
+
+
+def _found(finding: Finding, numbers: Mapping[Subject, int]) -> Found:
+    level, title, advice, origin = subject = _subject(finding)
+    fact = spelled(finding.fact)
+    if subject in numbers:
+        advice = origin = ""
+    return Found(level, LEVEL_WORDS[level], title, fact[:1].upper() + fact[1:], advice, origin, numbers.get(subject))
+
+
+def _reasons(entry: Entry) -> str:
+    """Return the titles of the findings that decide the verdict, or the work if nothing stands against it."""
+    for level in ("stop", "unknown", "work"):
+        titles = [spelled(finding.title) for finding in entry.findings if finding.level == level]
+        if titles:
+            return "; ".join(titles)
+    return "nothing found by the checks made here"
