@@ -23,6 +23,9 @@ class Settings:
         subcooling_K: Temperature below the bubble point at the expansion valve.
         isentropic_efficiency: Isentropic work over real work.
         volumetric_efficiency: Volume drawn in over swept volume.
+        heat_loss_share: Share of the compressor power that leaves through its shell instead of with the gas.
+        suction_drop_K: Fall of the dew temperature from the evaporator to the compressor by pressure drop.
+        discharge_drop_K: Fall of the dew temperature from the compressor to the condenser by pressure drop.
     """
 
     useful_superheat_K: ArrayLike = 5.0
@@ -30,6 +33,9 @@ class Settings:
     subcooling_K: ArrayLike = 0.0
     isentropic_efficiency: ArrayLike = 0.70
     volumetric_efficiency: ArrayLike = 0.90
+    heat_loss_share: ArrayLike = 0.0
+    suction_drop_K: ArrayLike = 0.0
+    discharge_drop_K: ArrayLike = 0.0
 
 
 @dataclass(frozen=True)
@@ -37,7 +43,7 @@ class Cycle:
     """One cycle, or an array of them; all arrays have the same shape.
 
     Attributes:
-        p_evap_Pa, p_cond_Pa: Pressures of the two exchangers; no pressure drop is counted.
+        p_evap_Pa, p_cond_Pa: Pressures of the two exchangers.
         T_evap_dew_K, T_evap_inlet_K: Dew point, and temperature after the expansion valve.
         T_cond_dew_K, T_cond_bubble_K: Dew and bubble point in the condenser.
         T_suction_K: Temperature at the compressor inlet.
@@ -46,11 +52,14 @@ class Cycle:
         h_suction_J_per_kg, h_discharge_J_per_kg, h_discharge_isentropic_J_per_kg: Enthalpy around the compressor.
         s_suction_J_per_kgK: Entropy at the compressor inlet.
         density_suction_kg_per_m3: Density at the compressor inlet.
+        p_suction_Pa, p_discharge_Pa: Pressures at the compressor; those of the exchangers if no drop is given.
         settings: What the cycle was solved with.
     """
 
     p_evap_Pa: FloatArray
     p_cond_Pa: FloatArray
+    p_suction_Pa: FloatArray
+    p_discharge_Pa: FloatArray
     T_evap_dew_K: FloatArray
     T_evap_inlet_K: FloatArray
     T_cond_dew_K: FloatArray
@@ -74,8 +83,10 @@ class Cycle:
 
     @property
     def work_J_per_kg(self) -> FloatArray:
-        """Return the compressor work on each kilogram. [J/kg]"""
-        return self.h_discharge_J_per_kg - self.h_suction_J_per_kg
+        """Return the compressor work on each kilogram, heat lost through its shell included. [J/kg]"""
+        isentropic = self.h_discharge_isentropic_J_per_kg - self.h_suction_J_per_kg
+        work: FloatArray = isentropic / np.asarray(self.settings.isentropic_efficiency, dtype=float)
+        return work
 
     @property
     def line_heat_J_per_kg(self) -> FloatArray:
@@ -99,8 +110,8 @@ class Cycle:
 
     @property
     def pressure_ratio(self) -> FloatArray:
-        """Return condensing over evaporating pressure, absolute. [-]"""
-        return self.p_cond_Pa / self.p_evap_Pa
+        """Return discharge over suction pressure at the compressor, absolute. [-]"""
+        return self.p_discharge_Pa / self.p_suction_Pa
 
 
 def solve_cycle(fluid: Fluid, p_evap_Pa: ArrayLike, p_cond_Pa: ArrayLike, settings: Settings) -> Cycle:
@@ -119,23 +130,27 @@ def solve_cycle(fluid: Fluid, p_evap_Pa: ArrayLike, p_cond_Pa: ArrayLike, settin
     p_cond_Pa = _above(fluid, p_evap_Pa, p_cond_Pa)
     evaporator = fluid.vapour(p_evap_Pa, settings.useful_superheat_K)
     superheat = np.asarray(settings.useful_superheat_K) + np.asarray(settings.line_superheat_K)
-    suction = fluid.vapour(p_evap_Pa, superheat)
-    h_isentropic = fluid.h_at_entropy(p_cond_Pa, suction.s_J_per_kgK)
+    p_suction = _shifted(fluid, p_evap_Pa, -np.asarray(settings.suction_drop_K))
+    p_discharge = _shifted(fluid, p_cond_Pa, np.asarray(settings.discharge_drop_K))
+    suction = fluid.vapour(p_suction, superheat + np.asarray(settings.suction_drop_K))
+    h_isentropic = fluid.h_at_entropy(p_discharge, suction.s_J_per_kgK)
     work = (h_isentropic - suction.h_J_per_kg) / np.asarray(settings.isentropic_efficiency)
-    h_discharge = suction.h_J_per_kg + work
+    h_discharge = suction.h_J_per_kg + work * (1.0 - np.asarray(settings.heat_loss_share))
     dew, bubble = fluid.dew(p_cond_Pa), fluid.bubble(p_cond_Pa)
     liquid = fluid.liquid(p_cond_Pa, settings.subcooling_K)
     inlet = fluid.two_phase(p_evap_Pa, liquid.h_J_per_kg)
     arrays = {
         "p_evap_Pa": evaporator.p_Pa,
         "p_cond_Pa": dew.p_Pa,
+        "p_suction_Pa": suction.p_Pa,
+        "p_discharge_Pa": np.asarray(p_discharge, dtype=float),
         "T_evap_dew_K": evaporator.T_K - np.asarray(settings.useful_superheat_K),
         "T_evap_inlet_K": inlet.T_K,
         "T_cond_dew_K": dew.T_K,
         "T_cond_bubble_K": bubble.T_K,
         "T_suction_K": suction.T_K,
-        "T_discharge_K": fluid.T_at_enthalpy(p_cond_Pa, h_discharge),
-        "T_discharge_isentropic_K": fluid.T_at_enthalpy(p_cond_Pa, h_isentropic),
+        "T_discharge_K": fluid.T_at_enthalpy(p_discharge, h_discharge),
+        "T_discharge_isentropic_K": fluid.T_at_enthalpy(p_discharge, h_isentropic),
         "h_evap_in_J_per_kg": liquid.h_J_per_kg,
         "h_evap_out_J_per_kg": evaporator.h_J_per_kg,
         "h_suction_J_per_kg": suction.h_J_per_kg,
@@ -146,6 +161,11 @@ def solve_cycle(fluid: Fluid, p_evap_Pa: ArrayLike, p_cond_Pa: ArrayLike, settin
     }
     shape = np.broadcast_shapes(*(np.shape(array) for array in arrays.values()))
     return Cycle(settings=settings, **{name: np.broadcast_to(array, shape) for name, array in arrays.items()})
+
+
+def _shifted(fluid: Fluid, p_Pa: ArrayLike, by_K: FloatArray) -> ArrayLike:
+    """Return the pressure whose dew temperature lies `by_K` above that of another pressure."""
+    return fluid.p_dew(fluid.dew(p_Pa).T_K + by_K) if np.any(by_K) else p_Pa
 
 
 def _above(fluid: Fluid, p_evap_Pa: ArrayLike, p_cond_Pa: ArrayLike) -> FloatArray:

@@ -41,9 +41,10 @@ def state_points(fluid: Fluid, cycle: Cycle) -> tuple[StatePoint, ...]:
     """
     p_evap, p_cond = cycle.p_evap_Pa, cycle.p_cond_Pa
     useful = np.asarray(cycle.settings.useful_superheat_K)
+    at_suction = np.asarray(cycle.settings.line_superheat_K) + np.asarray(cycle.settings.suction_drop_K)
     states = {
-        "compressor inlet": fluid.vapour(p_evap, useful + np.asarray(cycle.settings.line_superheat_K)),
-        "discharge": fluid.above_bubble(p_cond, cycle.h_discharge_J_per_kg),
+        "compressor inlet": fluid.vapour(cycle.p_suction_Pa, useful + at_suction),
+        "discharge": fluid.above_bubble(cycle.p_discharge_Pa, cycle.h_discharge_J_per_kg),
         "condenser dew point": fluid.dew(p_cond),
         "condenser bubble point": fluid.bubble(p_cond),
         "expansion valve inlet": fluid.liquid(p_cond, cycle.settings.subcooling_K),
