@@ -4,11 +4,13 @@ from __future__ import annotations
 
 import codecs
 import contextlib
+import importlib
 import io
 import json
 import os
+import signal
 import sys
-from collections.abc import Callable
+from collections.abc import Callable, Iterator
 from functools import wraps
 from pathlib import Path
 from typing import TYPE_CHECKING, Any, NoReturn
@@ -95,7 +97,23 @@ def _strong() -> Callable[[str], str]:
 
 
 def _say_build(designation: str) -> None:
-    click.echo(f"Building the property tables of {designation}, once for this version…", err=True)
+    """Say what takes a second, and load the library for it; its loading ends in a crash if it is interrupted."""
+    with _interrupts_held():
+        click.echo(f"Building the property tables of {designation}, once for this version…", err=True)
+        importlib.import_module("CoolProp.CoolProp")
+
+
+@contextlib.contextmanager
+def _interrupts_held() -> Iterator[None]:
+    """Let an interrupt wait until the block has ended."""
+    came: list[int] = []
+    before = signal.signal(signal.SIGINT, lambda number, frame: came.append(number))
+    try:
+        yield
+    finally:
+        signal.signal(signal.SIGINT, before)
+    if came:
+        raise KeyboardInterrupt
 
 
 def _compared(case_file: Path) -> Comparison:
