@@ -13,6 +13,8 @@ from retrofit.study import ChartLines, Comparison, Entry
 from retrofit.units import UnitSystem
 
 TOGETHER = 6  # candidates in one chart; more are spread over several
+WIDER = 2.5  # times the refrigerating effect: on shared axes the other cycles would be too narrow to read
+Placed = tuple[int, Entry]
 
 
 def overlay_charts(comparison: Comparison, units: UnitSystem) -> tuple[Drawing, ...]:
@@ -21,7 +23,8 @@ def overlay_charts(comparison: Comparison, units: UnitSystem) -> tuple[Drawing, 
     Args:
         comparison: The result.
         units: The reader's units.
-    Returns: One chart for up to six candidates, else several, each with the existing one; none if nothing was computed.
+    Returns: One chart for up to six candidates, else several, each with the existing one; candidates whose cycles
+            are far wider have one of their own; none if nothing was computed.
     """
     solved = [(place, entry) for place, entry in enumerate(comparison.entries) if entry.lines is not None]
     if not solved:
@@ -29,13 +32,30 @@ def overlay_charts(comparison: Comparison, units: UnitSystem) -> tuple[Drawing, 
     existing, candidates = solved[:1], solved[1:]
     if existing[0][0] != 0:
         existing, candidates = [], solved
-    count = max(1, -(-len(candidates) // TOGETHER))
-    share = -(-len(candidates) // count) if candidates else 1
-    groups = [existing + candidates[i * share : (i + 1) * share] for i in range(count)]
+    groups = [existing + part for part in _parts(candidates, existing)] or [existing]
     return tuple(_overlay(comparison, group, units, number) for number, group in enumerate(groups))
 
 
-def _overlay(comparison: Comparison, group: list[tuple[int, Entry]], units: UnitSystem, number: int) -> Drawing:
+def _parts(candidates: list[Placed], existing: list[Placed]) -> list[list[Placed]]:
+    """Return the candidates in parts that share axes: a few each, and those with far wider cycles by themselves."""
+    if not candidates:
+        return []
+    usual = (existing or candidates)[0][1]
+    parts = []
+    for is_wide in (False, True):
+        kind = [item for item in candidates if (_effect(item[1]) > WIDER * _effect(usual)) == is_wide]
+        count = -(-len(kind) // TOGETHER)
+        share = -(-len(kind) // count) if count else 1
+        parts += [kind[i : i + share] for i in range(0, len(kind), share)]
+    return parts
+
+
+def _effect(entry: Entry) -> float:
+    assert entry.duty is not None
+    return entry.duty.refrigerating_effect_J_per_kg
+
+
+def _overlay(comparison: Comparison, group: list[Placed], units: UnitSystem, number: int) -> Drawing:
     box = _limits([entry for _, entry in group], units)
     names = ", ".join(entry.refrigerant.display_name for _, entry in group)
     with canvas(4.6, 0.56, 1.12, 0.08, 0.44) as figure:
@@ -168,7 +188,7 @@ def _clusters(items: list[tuple[float, int]], near: float) -> list[list[tuple[fl
     return clusters
 
 
-def _end_labels(axes: Any, group: list[tuple[int, Entry]], units: UnitSystem) -> None:
+def _end_labels(axes: Any, group: list[Placed], units: UnitSystem) -> None:
     """Name each cycle in the margin, with a hairline to its discharge point; spread so that no two touch."""
     ends = []
     for place, entry in group:

@@ -96,8 +96,9 @@ def discharge_chart(comparison: Comparison, units: UnitSystem) -> Drawing:
         svg = to_svg(figure, "discharge", "Discharge temperatures", described)
     width = units.with_unit("temperature difference", band, decimals=0)
     caption = (
-        f"Discharge temperature; the line through each mark is the band of the model, ±{width}. The thin vertical line is today's. The dashed lines are "
-        "the levels of the checks, not a maker's limits: the maker's written limit goes before them."
+        f"Discharge temperature; the line through each mark is the band of the model, ±{width}. The thin "
+        "vertical line is today's. The dashed lines are the levels of the checks, not a maker's limits: the maker's "
+        "written limit goes before them."
     )
     return Drawing("discharge", svg, caption, described)
 

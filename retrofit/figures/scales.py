@@ -12,6 +12,7 @@ from retrofit.units import UnitSystem
 
 MOST_TICKS = 12
 SHORT_SCALE = 40.0  # largest over smallest pressure
+LABEL_WIDTH = 0.09  # of the axis
 LABEL_SHARE = 0.03, 0.075  # of the axis: half a label, and a label with a point number
 STEPS = {"si": (10.0, 20.0, 40.0), "ip": (20.0, 40.0, 80.0)}
 
@@ -53,16 +54,17 @@ def temperature_ticks(
     """
     low, high = axes.get_ylim()
     T = units.number("temperature", lines.T_K)
-    for h_line, p_line in (
-        (lines.h_bubble_J_per_kg, lines.p_bubble_Pa),
-        (lines.h_dew_J_per_kg, lines.p_dew_Pa),
-    ):
+    h_bubble = enthalpies(lines, lines.h_bubble_J_per_kg, units)
+    room = LABEL_WIDTH * (axes.get_xlim()[1] - axes.get_xlim()[0])
+    for h_line, p_line in ((lines.h_bubble_J_per_kg, lines.p_bubble_Pa), (lines.h_dew_J_per_kg, lines.p_dew_Pa)):
         h, p = enthalpies(lines, h_line, units), units.number("pressure", p_line)
         for value in _round_temperatures(T[(p > low) & (p < high)], units.name):
             at_h, at_p = float(np.interp(value, T, h)), float(np.exp(np.interp(value, T, np.log(p))))
             axes.plot([at_h], [at_p], "_", color=INK, markersize=4, markeredgewidth=THIN)
             on_limit = limit is not None and abs(np.log(at_p / limit) / np.log(high / low)) < LABEL_SHARE[0]
-            if not on_limit and _is_free(np.log(at_p / np.asarray(isobars)) / np.log(high / low)):
+            # A dew label stands inside the dome, if there is room for it.
+            is_narrow = h_line is lines.h_dew_J_per_kg and at_h - float(np.interp(value, T, h_bubble)) < room
+            if not on_limit and not is_narrow and _is_free(np.log(at_p / np.asarray(isobars)) / np.log(high / low)):
                 text = f"{value:g}".replace("-", "\N{MINUS SIGN}")
                 axes.annotate(text, (at_h, at_p), (-5, 0), textcoords="offset points", ha="right", va="center",
                               fontsize=SMALL_PT)  # fmt: skip

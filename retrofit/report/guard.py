@@ -19,6 +19,7 @@ if TYPE_CHECKING:
     from retrofit.report.page import Page
 
 # What a browser may do with a report: show it, with the styles and pictures that are in it.
+BLOCK_ID = "cautions"
 POLICY = "default-src 'none'; style-src 'unsafe-inline'; img-src data:"
 VOID = frozenset("area base br col embed hr img input link meta param source track wbr".split())
 UNSEEN = frozenset("script style template noscript textarea title iframe object select datalist svg head".split())
@@ -59,7 +60,7 @@ def check_page(html: str, page: Page, cautions: str) -> None:
             "the template leaves out the policy that keeps a report from loading things; take it from report.html"
         )
     _check_words(reader.seen_text(), page)
-    _check_styles(reader.styles)
+    _check_styles(reader.styles, reader.around)
 
 
 def _check_words(seen: str, page: Page) -> None:
@@ -73,14 +74,16 @@ def _check_words(seen: str, page: Page) -> None:
             )
 
 
-def _check_styles(styles: list[str]) -> None:
+def _check_styles(styles: list[str], around: set[str]) -> None:
+    """Refuse a rule that hides and can reach the block, by itself or by an element around it."""
+    reaching = re.compile("|".join([REACHING.pattern, *(rf"(?<![\w-]){re.escape(name)}(?![\w-])" for name in around)]))
     for style in styles:
         text = _unescaped(re.sub(r"/\*.*?\*/", "", style, flags=re.DOTALL))
         if found := FETCHING.search(text):
             raise ReportError(f'the template is refused: its style has "{found[0]}", which would load something')
         for selector, body in re.findall(r"([^{}]*)\{([^{}]*)\}", text):
             plain = re.sub(r"\s+", "", body).casefold()
-            if HIDING.search(plain) and REACHING.search(selector.strip().casefold()):
+            if HIDING.search(plain) and reaching.search(selector.strip().casefold()):
                 raise ReportError(
                     f'the template is refused: its style "{selector.strip()[:60]}" can hide the cautions; '
                     "give what shall be hidden a class of its own"
@@ -105,7 +108,8 @@ class _PageReader(HTMLParser):
 
     def __init__(self) -> None:
         super().__init__(convert_charrefs=True)
-        self.open: list[tuple[str, bool]] = []  # name, and whether it hides what is in it
+        self.open: list[tuple[str, bool, set[str]]] = []  # tag, whether it hides what is in it, tag, id and classes
+        self.around: set[str] = set()  # tags, ids and classes of what the block stands in
         self.texts: list[str] = []
         self.styles: list[str] = []
         self.refused: list[str] = []
@@ -117,21 +121,24 @@ class _PageReader(HTMLParser):
     def handle_starttag(self, tag: str, attrs: list[tuple[str, str | None]]) -> None:
         named = {name: value or "" for name, value in attrs}
         self._refuse(tag, named)
+        if named.get("id") == BLOCK_ID:
+            self.around.update(*(names for _, _, names in self.open))
         if tag not in VOID:
-            self.open.append((tag, self._hides(tag, named)))
+            names = {tag, named.get("id", ""), *named.get("class", "").split()} - {""}
+            self.open.append((tag, self._hides(tag, named), {name.casefold() for name in names}))
 
     def handle_startendtag(self, tag: str, attrs: list[tuple[str, str | None]]) -> None:
         self._refuse(tag, {name: value or "" for name, value in attrs})
 
     def handle_endtag(self, tag: str) -> None:
-        names = [name for name, _ in self.open]
+        names = [name for name, _, _ in self.open]
         if tag in names:
             del self.open[len(names) - 1 - names[::-1].index(tag) :]
 
     def handle_data(self, data: str) -> None:
         if self.open and self.open[-1][0] == "style":
             self.styles.append(data)
-        elif not any(hides for _, hides in self.open):
+        elif not any(hides for _, hides, _ in self.open):
             self.texts.append(data)
 
     def _hides(self, tag: str, named: dict[str, str]) -> bool:

@@ -163,7 +163,7 @@ def _answer(comparison: Comparison, units: UnitSystem) -> Answered:
         (spelled(matter.about), tuple((spelled(words), tuple(map(spelled, names))) for words, names in matter.groups))
         for matter in found.matters
     )
-    remarks = tuple(spelled(remark) for remark in found.remarks)
+    remarks = tuple(spelled(remark[:1].upper() + remark[1:]) for remark in found.remarks)
     return Answered(spelled(found.question), spelled(found.headline), matters, remarks)
 
 

@@ -41,10 +41,10 @@ def environment_table(comparison: Comparison, units: UnitSystem) -> Table:
     Returns: The table; a value not known reads "not stated".
     """
     notes, entries = Notes(), comparison.entries
-    density = units.label("density")
+    density = {"si": "g/m³", "ip": "lb/1000 ft³"}[units.name]  # the thousandth part of the usual unit of density
 
     def mass_per_volume(number: object) -> str:
-        return units.text("density", float(number), decimals=4 if units.name == "ip" else 3)  # type: ignore[arg-type]
+        return _three_digits(1000.0 * float(units.number("density", float(number))))  # type: ignore[arg-type]
 
     limits = (
         value_row("Safety class", "", entries, "safety_class", notes, str),
@@ -82,7 +82,11 @@ def _cell(refrigerant: Refrigerant, field: str, notes: Notes, show: Callable[[ob
     value: Value = getattr(refrigerant, field)
     marks = tuple(notes.mark(refrigerant.display_name, text) for text in doubts(value))
     if value.value is None:
-        return Cell("none" if value.status == "not applicable" else NOT_STATED, is_number=False, marks=marks)
+        return Cell(
+            "none" if value.status == "not applicable" else NOT_STATED.replace(" ", "\N{NO-BREAK SPACE}"),
+            is_number=False,
+            marks=marks,
+        )
     text = show(value.value) + (" ?" if value.status == "unresolved" else "")
     return Cell(text, is_number=isinstance(value.value, float), marks=marks)
 
@@ -97,9 +101,14 @@ def doubts(value: Value) -> list[str]:
     return texts
 
 
+def _three_digits(value: float) -> str:
+    """Return a number as sources print it: up to three digits, no zeros added behind."""
+    return format_number(value, 0) if value >= 1000.0 else f"{value:.3g}"
+
+
 def _potential(number: object) -> str:
     value = float(number)  # type: ignore[arg-type]
-    return format_number(value, 0) if value >= 10.0 else f"{value:.3g}"
+    return format_number(value, 0) if value >= 10.0 else _three_digits(value)
 
 
 def _plain(number: object) -> str:

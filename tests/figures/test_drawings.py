@@ -91,6 +91,14 @@ def test_many_candidates_are_spread_over_several_overlays(case_of):
     assert {word for overlay in overlays for word in words(overlay)} >= {f"R-{name[1:]}" for name in names}
 
 
+def test_a_cycle_of_another_width_does_not_squeeze_the_others(case_of):
+    """Ammonia, whose latent heat is about six times that of R-22, has a chart of its own beside R-22."""
+    overlays = figures.overlay_charts(compare(case_of(existing="R22", candidates=("R717", "R407C"))), SI)
+    names = [[word for word in words(overlay) if word.startswith("R-")] for overlay in overlays]
+
+    assert [sorted(group) for group in names] == [["R-22", "R-407C"], ["R-22", "R-717"]]
+
+
 def test_the_pressure_axis_is_logarithmic(result):
     """Equal ratios of pressure lie equally far apart on the axis: 4 to 8 as 10 to 20 and 20 to 40 bar."""
     chart = ET.fromstring(figures.cycle_chart(result, 1, SI).svg)

@@ -47,6 +47,17 @@ def test_the_page_does_not_scroll_sideways(name, width, opened):
     assert page.evaluate("document.body.scrollWidth") <= width
 
 
+def test_a_title_without_blanks_does_not_push_the_page_wide(browser, page_of):
+    """A title of 200 letters in one word breaks at 320 px."""
+    context = browser.new_context(viewport={"width": 320, "height": 900})
+    page = context.new_page()
+    page.set_content(page_of("trailer", "si").replace("<h1><bdi>", "<h1><bdi>" + "W" * 200))
+    width = page.evaluate("document.scrollingElement.scrollWidth")
+    context.close()
+
+    assert width <= 320
+
+
 def test_boxes_that_scroll_can_be_reached_by_the_keyboard(opened):
     """At 320 px each box wider than the window has a name, a role and a place in the tab order."""
     page = opened("harbour-market", 320)

@@ -4,6 +4,10 @@ import re
 
 import pytest
 
+from retrofit.checks import assess
+from retrofit.report import render_html
+from retrofit.study import compare
+
 # Factors to SI: NIST Special Publication 811 (2008), appendix B; a ton of refrigeration is 12 000 Btu/h.
 TO_SI = {
     "bar a": 1e5, "psia": 6894.757, "kW": 1e3, "ton": 3516.853, "kg/h": 1 / 3600, "lb/h": 0.45359237 / 3600,
@@ -83,6 +87,18 @@ def test_the_state_table_closes_the_energy_balance(units, page_of, read_page, as
         )
         assert (h[8] - h[6]) / (h[2] - h[1]) == pytest.approx(entry.duty.cop, rel=0.004)
         assert h[5] == h[6]
+
+
+def test_limits_by_concentration_keep_their_digits(case_of, made_at, read_page):
+    """Ammonia's practical limit of EN 378, 0.00035 kg/m³, is 0.35 g/m³ or 0.0218 lb in 1000 cubic feet, not 0."""
+    result = assess(compare(case_of(existing="R22", candidates=("R717",))))
+    cells = {}
+    for units in ("si", "ip"):
+        rows = read_page(render_html(result, units, made_at=made_at)).tables["t-environment"]
+        row = next(row for row in rows if row[0] == "Practical limit of EN 378")
+        cells[row[1]] = row[3]
+
+    assert cells == {"g/m³": "0.35", "lb/1000 ft³": "0.0218"}  # 0.35 g/m³ * 28.31685 m³ / 453.59237 g/lb
 
 
 def test_enthalpy_stands_on_the_reference_that_is_named(assessed):

@@ -78,6 +78,16 @@ def test_a_template_cannot_drop_the_cautions(instead, render):
         render(report=report_with("{{ cautions }}", instead))
 
 
+@pytest.mark.parametrize("rule", [".ours { display: none }", "#box{max-height:0}", "x-y > div { visibility: hidden }"])
+def test_what_is_around_the_cautions_cannot_be_hidden_by_style(rule, render):
+    """A rule that hides an element which the template has put around the block is refused too."""
+    style = (BUILT_IN / "style.html").read_text(encoding="utf-8")
+    around = '<x-y><div class="mine ours" id="box">{{ cautions }}</div></x-y>'
+
+    with pytest.raises(ReportError, match="can hide the cautions"):
+        render(style=style + rule, report=report_with("{{ cautions }}", around))
+
+
 def test_an_own_cautions_template_is_not_used(render):
     """The block of cautions always comes from the built-in template."""
     html = render(cautions="<p>Nothing to see</p>")
