@@ -13,7 +13,7 @@ from retrofit.study import ChartLines, Comparison, Entry
 from retrofit.units import UnitSystem
 
 TOGETHER = 6  # candidates in one chart; more are spread over several
-WIDER = 2.5  # times the refrigerating effect: on shared axes the other cycles would be too narrow to read
+WIDER = 3.5  # times the refrigerating effect: on shared axes the other cycles would be too narrow to read
 Placed = tuple[int, Entry]
 
 
