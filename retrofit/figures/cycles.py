@@ -109,8 +109,8 @@ def cycle_chart(comparison: Comparison, place: int, units: UnitSystem) -> Drawin
         name, described = f"cycle-{place}", _cycle_words(entry, units)
         svg = to_svg(figure, name, f"Pressure-enthalpy chart of {label} with its cycle", described)
     caption = (
-        f"{label}: saturation lines with their temperatures in {units.label('temperature')} "
-        f"(bubble line on the left, dew line on the right), and the cycle with the point numbers of the table."
+        f"{label}: bubble line (left) and dew line (right) with temperatures in {units.label('temperature')}, and the "
+        "cycle with the point numbers of the table."
     )
     return Drawing(name, svg, caption, described)
 
