@@ -74,25 +74,31 @@ def defaults(case: Case, units: UnitSystem) -> tuple[Taken, ...]:
 
 
 def missing(case: Case) -> tuple[str, ...]:
-    """Return the meaning of every key that the file leaves out and no default stands for."""
+    """Return the meaning of every key that a table of the file leaves out and no default stands for."""
     taken = {default.key for default in case.defaults} | set(case.given)
     return tuple(
-        field.description or field.alias or name
-        for table, model in TABLES.items()
-        for name, field in model.model_fields.items()
-        if f"{table}.{field.alias}" not in taken
+        _meaning(table, alias)
+        for table in TABLES
+        if getattr(case, table, None) is not None
+        for alias in _names(table)
+        if f"{table}.{alias}" not in taken
     )
+
+
+def _names(table: str) -> dict[str, str]:
+    """Return the name of the field behind each key of a table; none for a table that the case model does not know."""
+    model = TABLES.get(table)
+    return {} if model is None else {field.alias or name: name for name, field in model.model_fields.items()}
 
 
 def _meaning(table: str, alias: str) -> str:
-    return next(
-        (field.description or alias for field in TABLES[table].model_fields.values() if field.alias == alias), alias
-    )
+    name = _names(table).get(alias)
+    return alias if name is None else TABLES[table].model_fields[name].description or alias
 
 
 def _used(case: Case, table: str, alias: str, units: UnitSystem) -> str:
-    name = next((name for name, field in TABLES[table].model_fields.items() if field.alias == alias), "")
-    value = getattr(getattr(case, table), name, None)
+    name = _names(table).get(alias, "")
+    value = getattr(getattr(case, table, None), name, None) if name else None
     kind = next((kind for ending, kind in _KINDS if name.endswith(ending)), "")
     if not kind or not isinstance(value, int | float):
         return ""
