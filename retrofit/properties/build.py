@@ -13,7 +13,8 @@ from retrofit.properties.equation import EquationModel, Equilibrium, PhaseState
 from retrofit.properties.fluid import Fluid
 from retrofit.properties.grid import FloatArray
 from retrofit.properties.range import SaturationSpan, saturation_span
-from retrofit.properties.table import build_tables, greatest_subcooling
+from retrofit.properties.table import Tables, build_tables, greatest_subcooling
+from retrofit.properties.transport import Components, viscosity_gaps
 from retrofit.properties.two_phase import walk_qualities
 
 LARGEST_ERROR = 1e-5  # relative, away from the critical point
@@ -40,10 +41,18 @@ def build_fluid(mixture: Mixture) -> Fluid:
         far, near = largest_errors(model, span, fluid)
         if far <= LARGEST_ERROR and near <= LARGEST_ERROR_NEAR_CRITICAL:
             numbers = replace(tables.numbers, largest_error=far)
-            return replace(fluid, tables=replace(tables, numbers=numbers))
+            gaps = viscosity_gaps(Components(mixture), span.T_highest_K, _has_viscosity_throughout(tables))
+            return replace(fluid, tables=replace(tables, numbers=numbers), viscosity_gaps=gaps)
     raise ModelFaultError(
         f"{mixture.designation}: its tables differ from its equations by {far:.1e} ({near:.1e} near the critical "
         f"point), more than the {LARGEST_ERROR:.0e} allowed"
+    )
+
+
+def _has_viscosity_throughout(tables: Tables) -> bool:
+    pairs = (tables.liquid_viscosity, tables.bubble), (tables.vapour_viscosity, tables.dew)
+    return all(
+        np.all(np.isfinite(known.nodes)) and np.array_equal(known.x[[0, -1]], line.x[[0, -1]]) for known, line in pairs
     )
 
 

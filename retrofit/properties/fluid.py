@@ -9,7 +9,7 @@ from __future__ import annotations
 from dataclasses import dataclass, fields, replace
 
 import numpy as np
-from numpy.typing import ArrayLike
+from numpy.typing import ArrayLike, NDArray
 
 from retrofit.errors import OutsideValidRangeError
 from retrofit.properties.grid import FloatArray
@@ -17,6 +17,7 @@ from retrofit.properties.table import Tables, greatest_subcooling
 
 KELVIN = 273.15
 ENDS = 1e-9  # rounding allowed at the ends of a range, relative
+DEW_SLACK_K = 0.01  # p of T and T of p are tables of their own, which agree within this
 
 
 @dataclass(frozen=True)
@@ -46,12 +47,14 @@ class Fluid:
         designation: Catalogue designation.
         tables: Its tables.
         estimated_pairs: Component pairs whose interaction is estimated, not fitted.
+        viscosity_gaps: Why the viscosity is unknown somewhere in the range, in words; empty if it is not.
         lenient: Whether states outside the range are NaN instead of an error.
     """
 
     designation: str
     tables: Tables
     estimated_pairs: tuple[tuple[str, str], ...] = ()
+    viscosity_gaps: tuple[str, ...] = ()
     lenient: bool = False
 
     def as_lenient(self) -> Fluid:
@@ -282,6 +285,38 @@ class Fluid:
             nan,
         )
 
+    # -- viscosity -------------------------------------------------------------------------------
+
+    def viscosity_liquid(self, p_Pa: ArrayLike) -> FloatArray:
+        """Return the dynamic viscosity of saturated liquid. [Pa s]
+
+        Pressure itself hardly matters: for subcooled liquid ask at the bubble pressure of its temperature.
+
+        Args:
+            p_Pa: Bubble pressure. [Pa]
+        Returns: Viscosity; NaN where it is unknown, see `viscosity_gaps`. [Pa s]
+        Raises: OutsideValidRangeError outside the range of the bubble line.
+        """
+        ln_p = np.log(self._pressure_inside(p_Pa, self.tables.bubble.x, "bubble pressure"))
+        table = self.tables.liquid_viscosity
+        return np.where(_is_on(table.x, ln_p), np.exp(table(ln_p, 0)[0]), np.nan)
+
+    def viscosity_vapour(self, p_Pa: ArrayLike, T_K: ArrayLike) -> FloatArray:
+        """Return the dynamic viscosity of saturated or superheated vapour. [Pa s]
+
+        Args:
+            p_Pa: Pressure. [Pa]
+            T_K: Temperature, not below the dew point. [K]
+        Returns: Viscosity; NaN where it is unknown, see `viscosity_gaps`. [Pa s]
+        Raises: OutsideValidRangeError outside the range of the table of vapour.
+        """
+        dew, table = self.dew(p_Pa), self.tables.vapour_viscosity
+        heat = np.asarray(T_K, dtype=float) - dew.T_K
+        heat = np.where((heat < 0.0) & (heat > -DEW_SLACK_K), 0.0, heat)
+        heat = self._inside("superheat", heat, 0.0, self.tables.vapour.y[-1], "K above the dew point")
+        ln_p = np.log(dew.p_Pa)
+        return np.where(_is_on(table.x, ln_p), np.exp(table(ln_p, heat, 0)[0]), np.nan)
+
     # -- range -----------------------------------------------------------------------------------
 
     def _pressure_inside(self, p_Pa: ArrayLike, ln_p: FloatArray, what: str) -> FloatArray:
@@ -304,6 +339,12 @@ class Fluid:
             f"{self.designation}: {what} {_shown(given_0, unit)} is outside the range of its model, "
             f"{_shown(low_0, unit)} to {_shown(high_0, unit)}"
         )
+
+
+def _is_on(nodes: FloatArray, x: FloatArray) -> NDArray[np.bool_]:
+    """Return which positions lie between the first and the last node, rounding allowed."""
+    inside: NDArray[np.bool_] = (x >= nodes[0] - ENDS) & (x <= nodes[-1] + ENDS)
+    return inside
 
 
 def _shown(value: float, unit: str) -> str:

@@ -26,7 +26,7 @@ from retrofit.properties.components import Mixture
 from retrofit.properties.fluid import Fluid
 from retrofit.properties.table import Tables
 
-FORMAT = 3  # raise it when anything about the tables or how they are made changes
+FORMAT = 4  # raise it when anything about the tables or how they are made changes
 MAGIC = b"retrofit tables\n"
 FOLDER_VARIABLE = "RETROFIT_STORE"
 STALE_SECONDS = 3600.0
@@ -81,7 +81,8 @@ def read_fluid(mixture: Mixture, folder: Path) -> Fluid | None:
     with np.load(io.BytesIO(payload), allow_pickle=False) as arrays:
         found = {name: arrays[name] for name in arrays.files}
     pairs = tuple(tuple(pair) for pair in found.pop("estimated_pairs").tolist())
-    return Fluid(mixture.designation, Tables.from_arrays(found), pairs)
+    gaps = tuple(found.pop("viscosity_gaps").tolist())
+    return Fluid(mixture.designation, Tables.from_arrays(found), pairs, gaps)
 
 
 def write_fluid(mixture: Mixture, fluid: Fluid, folder: Path) -> bool:
@@ -94,7 +95,8 @@ def write_fluid(mixture: Mixture, fluid: Fluid, folder: Path) -> bool:
     """
     buffer = io.BytesIO()
     pairs = np.array(fluid.estimated_pairs, dtype="U16").reshape(-1, 2)
-    np.savez(buffer, estimated_pairs=pairs, **fluid.tables.arrays())  # type: ignore[arg-type]
+    gaps = np.array(fluid.viscosity_gaps, dtype=str)
+    np.savez(buffer, estimated_pairs=pairs, viscosity_gaps=gaps, **fluid.tables.arrays())  # type: ignore[arg-type]
     payload = buffer.getvalue()
     try:
         folder.mkdir(parents=True, exist_ok=True)

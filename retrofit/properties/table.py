@@ -3,7 +3,8 @@
 Saturation curves run along ln p. The vapour surface runs over ln p and the superheat; two more turn it
 round, so that a cycle needs no iteration: enthalpy from entropy, and temperature from enthalpy. Two-phase
 states are held as their small departure from a straight line between the saturated states, which is zero
-for a pure fluid. Liquid runs over ln p and the share of the greatest subcooling.
+for a pure fluid. Liquid runs over ln p and the share of the greatest subcooling. Viscosity has a curve and
+a surface of its own, over the pressures where it is known.
 """
 
 from __future__ import annotations
@@ -17,6 +18,7 @@ from retrofit.errors import ModelFaultError
 from retrofit.properties.equation import EquationModel, Equilibrium, PhaseState
 from retrofit.properties.grid import Curve, FloatArray, Surface
 from retrofit.properties.range import SaturationSpan
+from retrofit.properties.transport import Components, liquid_viscosity, vapour_viscosity
 from retrofit.properties.two_phase import walk_qualities
 
 LARGEST_SUBCOOLING_K = 80.0
@@ -51,6 +53,8 @@ class Tables:
         by_enthalpy: T above the dew point, over ln p and enthalpy above the dew point.
         two_phase: departures of T, s, v, mass and molar quality from the straight line, over ln p and share of h.
         liquid: h, s, ln rho against the bubble point, over ln p and share of the greatest subcooling.
+        liquid_viscosity: ln viscosity of saturated liquid, along ln p.
+        vapour_viscosity: ln viscosity of vapour, over ln p and superheat.
         numbers: Limits and constants.
     """
 
@@ -62,6 +66,8 @@ class Tables:
     by_enthalpy: Surface
     two_phase: Surface
     liquid: Surface
+    liquid_viscosity: Curve
+    vapour_viscosity: Surface
     numbers: Numbers
 
     def arrays(self) -> dict[str, FloatArray]:
@@ -92,6 +98,8 @@ class Tables:
             by_enthalpy=surface("by_enthalpy"),
             two_phase=surface("two_phase"),
             liquid=surface("liquid"),
+            liquid_viscosity=curve("liquid_viscosity"),
+            vapour_viscosity=surface("vapour_viscosity"),
             numbers=Numbers(*map(float, arrays["numbers"])),
         )
 
@@ -112,6 +120,8 @@ def build_tables(model: EquationModel, span: SaturationSpan, fineness: float = 1
     numbers = _numbers(model, span)
     bubble_curve, dew_curve = _along_pressure(bubble), _along_pressure(dew)
     heated = _vapour_nodes(model, dew, _graded(numbers.superheat_highest_K, round(48 * fineness), 2.0))
+    components = Components(model.mixture)
+    rho = np.exp(heated.ln_rho + dew_curve.nodes[3, 0][:, None]) / model.molar_mass_kg_per_mol
     return Tables(
         pressure=Curve.through(temperatures, np.log([[point.p_Pa for point in line] for line in (bubble, dew)])),
         bubble=bubble_curve,
@@ -121,6 +131,8 @@ def build_tables(model: EquationModel, span: SaturationSpan, fineness: float = 1
         by_enthalpy=_by_enthalpy(dew_curve.x, heated),
         two_phase=_two_phase(model, bubble, dew_curve, round(18 * fineness)),
         liquid=_liquid(model, bubble, span.T_lowest_K, round(28 * fineness)),
+        liquid_viscosity=liquid_viscosity(components, bubble_curve.x, temperatures),
+        vapour_viscosity=vapour_viscosity(components, dew_curve.x, heated.superheat, heated.T, rho),
         numbers=numbers,
     )
 
