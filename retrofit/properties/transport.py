@@ -25,7 +25,7 @@ Positions = NDArray[np.intp]
 KELVIN = 273.15
 PRESSURES, SUPERHEATS = 30, 13  # nodes of the vapour surface: its error is below 0.1 %, near the critical point 1 %
 # Some models find no solution in thin vapour. Below this share of the critical density the viscosity is within
-# about 4 % of its value at vanishing density, which is taken instead.
+# about 5 % of its value at vanishing density, which is taken instead.
 THIN = 0.1
 VANISHING_MOL_PER_M3 = 1e-6
 
@@ -111,8 +111,6 @@ class Components:
         return [self._gas(state, molar_density, T_K) for state in self._states]
 
     def _saturated(self, state: Any, T_K: float) -> float:
-        if T_K >= state.T_critical():
-            return np.nan
         state.unspecify_phase()
         return _value(lambda: state.update(self._library.QT_INPUTS, 0.0, T_K), state)
 

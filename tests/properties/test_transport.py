@@ -180,7 +180,7 @@ def test_thin_vapour(name):
         state.update(CoolProp.DmolarT_INPUTS, 1e-6, one)
         thin.append(state.viscosity())
 
-    np.testing.assert_allclose(found, thin, rtol=0.04)  # as stated for thin vapour
+    np.testing.assert_allclose(found, thin, rtol=0.05)  # as stated for thin vapour
 
 
 @pytest.mark.parametrize("name", ["R448A", "R454B", "R513A", "R290", "R407C"])
