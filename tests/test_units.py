@@ -36,6 +36,11 @@ SP811 = [
     ("1 ft3", "volume", 2.831685e-2),
     ("1 ft", "length", 3.048e-1),
     ("1 l", "volume", 1e-3),
+    ("1 in", "length", 2.54e-2),
+    ("1 um", "length", 1e-6),
+    ("1 psi", "pressure difference", 6.894757e3),
+    ("1 Btu/(lb F)", "specific heat", 4.1868e3),  # Btu_IT/(lb °F), exact
+    ("1 kJ/(kg K)", "specific heat", 1e3),
     ("9 R", "temperature difference", 5.0),  # 1 °F (interval) = 5/9 K
 ]
 
@@ -43,6 +48,10 @@ SP811 = [
 SP811_SHOWN = [
     ("specific enthalpy", 2.326e3),  # Btu_IT/lb, exact
     ("specific entropy", 4.1868e3),  # Btu_IT/(lb °R), exact
+    ("specific heat", 4.1868e3),
+    ("pressure difference", 6.894757e3),  # psi
+    ("diameter", 2.54e-2),  # in, exact
+    ("volume", 2.831685e-2),  # ft³
     ("density", 1.601846e1),  # lb/ft³
     ("volumetric capacity", 3.725895e4),  # Btu_IT/ft³
     ("pressure", 6.894757e3),  # psi
@@ -154,6 +163,10 @@ def test_a_point_on_a_scale_is_refused_as_a_difference(text, instead):
         ("9 R", "temperature", "is a temperature difference, but a temperature is needed"),
         ("3 bar", "power", "is a pressure, but a power is needed"),
         ("3 bar g", "mass", "is a pressure, but a mass is needed"),
+        ("3 bar g", "pressure difference", "is a pressure, but a pressure difference is needed; write it with bar"),
+        ("92 W", "current", "is a power, but a current is needed"),
+        ("4.19 kJ/kg", "specific heat", 'did you mean "kJ/kgK"'),
+        (8, "mass flow", 'such as "8 kg/h" (allowed: kg/h, kg/s or lb/h)'),
         ("1,5 kW", "power", "decimal mark is a point"),
         ("1 160 m3/h", "volume flow", "blank stands inside the number"),
         ("1.2.3 kW", "power", "not one plain number"),
@@ -196,6 +209,12 @@ def test_what_is_no_quantity_is_refused_in_words(value, kind, part):
 def test_a_fraction_is_a_number_or_percent(value, expected):
     """A fraction may be bare or in percent."""
     assert parse_quantity(value, "fraction") == pytest.approx(expected)
+
+
+@pytest.mark.parametrize(("value", "expected"), [(16, 16.0), ("16", 16.0), ("16 h", 16.0)])
+def test_hours_per_day_are_a_number_or_hours(value, expected):
+    """Hours in a day may be bare, and stay hours."""
+    assert parse_quantity(value, "hours per day") == expected
 
 
 @pytest.mark.parametrize("kind", [kind for kind in KINDS if kind != "pressure"])
@@ -265,7 +284,7 @@ def test_standard_atmosphere_refuses_heights_outside_its_range(altitude_m):
 
 def test_both_systems_show_the_same_kinds():
     """Whatever can be shown in SI can be shown in inch-pound units."""
-    assert SI.displays.keys() == IP.displays.keys()
+    assert SI.displays.keys() == IP.displays.keys() >= KINDS.keys()
     assert UNIT_SYSTEMS == {"si": SI, "ip": IP}
 
 

@@ -27,7 +27,7 @@ def parse_quantity(value: object, kind: str) -> float:
     Args:
         value: The text, such as "-8 degC"; a fraction may also be a number. [-]
         kind: A key of `KINDS` other than "pressure", which has its own function. [-]
-    Returns: The quantity. [K, W, kg, kg/s, m³/s, m, m³ or -]
+    Returns: The quantity. [SI unit of its kind; hours per day stay h/d]
     Raises: QuantityError if it is no quantity of that kind; the message says how to write one.
     Source: factors of NIST SP 811 (2008), appendix B; no range is checked here.
     >>> parse_quantity("-8 degC", "temperature")
@@ -143,7 +143,7 @@ def _unit_of(text: str, unit: str, kind: Kind) -> Unit:
         )
     other = next((k for k in KINDS.values() if unit in k.units and unit), None)
     if other is not None or unit in PRESSURE_BASES:
-        name = other.name if other else "a pressure"
+        name = "a pressure" if other is None or unit in PRESSURE_BASES else other.name
         raise QuantityError(f"{quoted(text)} is {name}, but {kind.name} is needed; {kind.how}")
     name = kind.name.partition(" ")[2]
     raise QuantityError(f"{quoted(unit)} is not a unit of {name}{close_to(unit, kind.units)}; {kind.how}")

@@ -15,6 +15,7 @@ from retrofit.units.table import (
     FAHRENHEIT,
     FOOT_M,
     HOUR_S,
+    INCH_M,
     KELVIN,
     MINUTE_S,
     POUND_KG,
@@ -104,9 +105,7 @@ class UnitSystem:
         places = self.displays[kind].decimals_for(kept)
         return [self.text(kind, value, decimals=places, missing=missing) for value in kept]
 
-    def with_unit(
-        self, kind: str, value: float | None, *, decimals: int | None = None, signed: bool = False
-    ) -> str:
+    def with_unit(self, kind: str, value: float | None, *, decimals: int | None = None, signed: bool = False) -> str:
         """Return an SI value as number and unit, or `not stated`; arguments as for `text`."""
         if value is None or not math.isfinite(value):
             return "not stated"
@@ -143,15 +142,22 @@ SI = UnitSystem(
         "temperature difference": Display("K", KELVIN, 1, 0),
         "pressure": Display("bar a", Unit(1e5), 2),
         "gauge pressure": Display("bar g", Unit(1e5), 2, 0),
+        "pressure difference": Display("bar", Unit(1e5), 2, 2),
         "cooling": Display("kW", Unit(1e3), 1),
         "heat flow": Display("kW", Unit(1e3), 1),
         "power": Display("kW", Unit(1e3), 1),
         "mass": Display("kg", Unit(1.0), 1),
         "mass flow": Display("kg/h", Unit(1.0 / HOUR_S), 0),
         "volume flow": Display("m³/h", Unit(1.0 / HOUR_S), 1),
+        "volume": Display("l", Unit(1e-3), 1),
         "length": Display("m", Unit(1.0), 0),
+        "diameter": Display("mm", Unit(1e-3), 1),
+        "current": Display("A", _BARE, 1),
+        "voltage": Display("V", _BARE, 0),
+        "hours per day": Display("h", _BARE, 1, 0),
         "specific enthalpy": Display("kJ/kg", Unit(1e3), 1, 0),
         "specific entropy": Display("kJ/(kg K)", Unit(1e3), 4, 0),
+        "specific heat": Display("kJ/(kg K)", Unit(1e3), 3),
         "density": Display("kg/m³", Unit(1.0), 2),
         "volumetric capacity": Display("kJ/m³", Unit(1e3), 0),
         "ratio": Display("", _BARE, 2, 2),
@@ -166,15 +172,22 @@ IP = UnitSystem(
         "temperature difference": Display("°F", RANKINE, 1, 0),
         "pressure": Display("psia", Unit(PSI_PA), 1),
         "gauge pressure": Display("psig", Unit(PSI_PA), 1, 0),
+        "pressure difference": Display("psi", Unit(PSI_PA), 1, 2),
         "cooling": Display("ton", Unit(TON_W), 1),  # of refrigeration, 12 000 Btu/h
         "heat flow": Display("Btu/h", Unit(BTU_PER_HOUR_W), 0),
         "power": Display("kW", Unit(1e3), 1),  # as the meter and the motor's plate give it
         "mass": Display("lb", Unit(POUND_KG), 1),
         "mass flow": Display("lb/h", Unit(POUND_KG / HOUR_S), 0),
         "volume flow": Display("cfm", Unit(CUBIC_FOOT_M3 / MINUTE_S), 1),
+        "volume": Display("ft³", Unit(CUBIC_FOOT_M3), 2),
         "length": Display("ft", Unit(FOOT_M), 0),
+        "diameter": Display("in", Unit(INCH_M), 2),
+        "current": Display("A", _BARE, 1),
+        "voltage": Display("V", _BARE, 0),
+        "hours per day": Display("h", _BARE, 1, 0),
         "specific enthalpy": Display("Btu/lb", Unit(BTU_J / POUND_KG), 2, 0),
         "specific entropy": Display("Btu/(lb °R)", Unit(BTU_J / POUND_KG / RANKINE_K), 5, 0),
+        "specific heat": Display("Btu/(lb °R)", Unit(BTU_J / POUND_KG / RANKINE_K), 3),
         "density": Display("lb/ft³", Unit(POUND_KG / CUBIC_FOOT_M3), 3),
         "volumetric capacity": Display("Btu/ft³", Unit(BTU_J / CUBIC_FOOT_M3), 1),
         "ratio": Display("", _BARE, 2, 2),

@@ -93,6 +93,13 @@ KINDS: Mapping[str, Kind] = {
         _PRESSURES,
         "bar, kPa, MPa or psi and then a (absolute) or g (gauge)",
     ),
+    "pressure difference": Kind(
+        "a pressure difference",
+        "bar",
+        "0.3 bar",
+        {base: Unit(factor) for base, factor in PRESSURE_BASES.items()},
+        "bar, kPa, Pa, mbar, MPa or psi, without a or g",
+    ),
     "power": Kind(
         "a power",
         "kW",
@@ -135,7 +142,13 @@ KINDS: Mapping[str, Kind] = {
         },
         "m3/h, m3/s, l/s or cfm",
     ),
-    "length": Kind("a length", "m", "250 m", {"m": Unit(1.0), "ft": Unit(FOOT_M)}, "m or ft"),
+    "length": Kind(
+        "a length",
+        "m",
+        "250 m",
+        {"m": Unit(1.0), "mm": Unit(1e-3), "um": Unit(1e-6), "ft": Unit(FOOT_M), "in": Unit(INCH_M)},
+        "m, mm, um, ft or in",
+    ),
     "volume": Kind(
         "a volume",
         "m3",
@@ -143,7 +156,24 @@ KINDS: Mapping[str, Kind] = {
         {"m3": Unit(1.0), "l": Unit(1e-3), "L": Unit(1e-3), "ft3": Unit(CUBIC_FOOT_M3)},
         "m3, l or ft3",
     ),
-    "fraction": Kind(
-        "a fraction", "%", "68 %", {"": Unit(1.0), "%": Unit(1e-2)}, "a bare number (0.68) or with %"
+    "specific heat": Kind(
+        "a specific heat",
+        "kJ/(kg K)",
+        "4.19 kJ/(kg K)",
+        {
+            "kJ/(kgK)": Unit(1e3),
+            "J/(kgK)": Unit(1.0),
+            "kJ/kgK": Unit(1e3),
+            "J/kgK": Unit(1.0),
+            "Btu/(lbR)": Unit(BTU_J / POUND_KG / RANKINE_K),
+            "Btu/(lbF)": Unit(BTU_J / POUND_KG / RANKINE_K),
+        },
+        "kJ/(kg K), J/(kg K) or Btu/(lb R)",
     ),
+    "current": Kind("a current", "A", "92 A", {"A": Unit(1.0), "mA": Unit(1e-3), "kA": Unit(1e3)}, "A"),
+    "voltage": Kind("a voltage", "V", "400 V", {"V": Unit(1.0), "kV": Unit(1e3)}, "V or kV"),
+    "hours per day": Kind(
+        "a number of hours per day", "h", "16 h", {"": Unit(1.0), "h": Unit(1.0)}, "a bare number (16) or with h"
+    ),
+    "fraction": Kind("a fraction", "%", "68 %", {"": Unit(1.0), "%": Unit(1e-2)}, "a bare number (0.68) or with %"),
 }
