@@ -3,20 +3,45 @@
 Read one with `read_case`; every complaint arrives at once in a `CaseFileError`. In Python a case is SI.
 """
 
-from retrofit.case.model import Case, Compare, Compressor, Default, Duty, Plant
+from retrofit.case.compressor import Compressor, Polynomial
+from retrofit.case.exchangers import Condenser, Evaporator, Exchanger
+from retrofit.case.keys import meaning, quantity
+from retrofit.case.model import Case, Default
+from retrofit.case.numbers import EfficiencyPoint, FilmFactors
+from retrofit.case.pipework import GasLine, Lines, LiquidLine, Receiver, Valve
+from retrofit.case.plant import Compare, Duty, Plant
 from retrofit.case.reader import read_case
+from retrofit.case.readings import Controls, Readings
 from retrofit.case.schema import SCHEMA_FILE, case_schema
 from retrofit.case.template import new_case_text
+from retrofit.case.thresholds import Threshold, Thresholds
 
 __all__ = [
     "SCHEMA_FILE",
     "Case",
     "Compare",
     "Compressor",
+    "Condenser",
+    "Controls",
     "Default",
     "Duty",
+    "EfficiencyPoint",
+    "Evaporator",
+    "Exchanger",
+    "FilmFactors",
+    "GasLine",
+    "Lines",
+    "LiquidLine",
     "Plant",
+    "Polynomial",
+    "Readings",
+    "Receiver",
+    "Threshold",
+    "Thresholds",
+    "Valve",
     "case_schema",
+    "meaning",
     "new_case_text",
+    "quantity",
     "read_case",
 ]

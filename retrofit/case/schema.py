@@ -26,7 +26,7 @@ def case_schema() -> dict[str, Any]:
 
 
 def _without_noise(node: Any) -> Any:
-    """Drop what pydantic adds and no editor needs: titles made from names, and defaults of nothing."""
+    """Drop what pydantic adds and no editor needs: titles made from names, nulls, and defaults of nothing."""
     if isinstance(node, list):
         return [_without_noise(item) for item in node]
     if not isinstance(node, dict):
@@ -34,4 +34,15 @@ def _without_noise(node: Any) -> Any:
     noise = {"default"} if node.get("default", "") is None else set()
     if isinstance(node.get("title"), str):
         noise.add("title")
-    return {key: _without_noise(value) for key, value in node.items() if key not in noise}
+    clean = {key: _without_noise(value) for key, value in node.items() if key not in noise}
+    return _without_null(clean)
+
+
+def _without_null(node: dict[str, Any]) -> dict[str, Any]:
+    """Drop the choice of nothing, which TOML cannot write: `x or null` becomes `x`."""
+    choices = node.get("anyOf", [])
+    kept = [choice for choice in choices if choice != {"type": "null"}]
+    if len(kept) == len(choices):
+        return node
+    others = {key: value for key, value in node.items() if key != "anyOf"}
+    return {**kept[0], **others} if len(kept) == 1 else {**others, "anyOf": kept}

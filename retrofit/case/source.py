@@ -27,9 +27,7 @@ def text_of(path: str, name: str) -> str:
     try:
         raw = _bytes_of(path, name)
     except FileNotFoundError:
-        raise _whole_file(
-            name, "there is no such file; check the path, or start one with `retrofit new`"
-        ) from None
+        raise _whole_file(name, "there is no such file; check the path, or start one with `retrofit new`") from None
     except PermissionError:
         raise _whole_file(name, "it may not be read; check its permissions") from None
     except (OSError, ValueError) as error:

@@ -8,6 +8,8 @@ _TEXT = """\
 #:schema ./{schema}
 # A case: one plant, its duty, and the refrigerants to compare. Change every value to your plant's.
 # Values are text with a unit. A line that begins with # is a remark; take the # away to use it.
+# What nobody knows is left out: it is then "not stated", and never taken as good.
+# A remark that begins with #| is another way to say what stands above it: use one of the two.
 
 title = "My plant"
 # about = "A sentence on whose plant it is and where it stands."
@@ -16,9 +18,16 @@ title = "My plant"
 refrigerant = "R404A"            # in the plant today, by its ASHRAE number
 # charge = "100 kg"              # whole plant; leave it out if nobody knows
 # oil = "polyol ester"           # mineral, alkylbenzene, polyol ester, ..., mixed or unknown
+# oil_changes = 2                # planned before the new refrigerant goes in
+# oil_left = "30 %"              # share of the old oil that each change leaves behind
 # high_side_limit = "28 bar g"   # maximum pressure on the nameplate of the high side
+# low_side_limit = "19 bar g"    # and of the low side
+# relief_setting = "28 bar g"    # stamped on the relief valve of the high side
 # altitude = "0 m"               # above sea level; it sets what a gauge counts from
+# highest_ambient = "38 degC"    # hottest air around plant and vessels, also at standstill
 # evaporator = "direct expansion"   # or flooded, or pumped
+# metals = ["copper", "steel"]   # that the refrigerant touches: copper, brass, steel, stainless, aluminium, zinc
+# controller = "selectable"      # refrigerant in the software: fixed to refrigerant, selectable or none
 
 [duty]
 cooling = "50 kW"
@@ -32,11 +41,126 @@ subcooling = "3 K"               # below the bubble point, at the expansion valv
 [compressor]
 isentropic_efficiency = 0.70
 volumetric_efficiency = 0.90
+#| efficiency_points = [[2, 0.62, 0.92], [4, 0.70, 0.86], [8, 0.66, 0.74]]   # pressure ratio, both efficiencies
 # swept_volume = "100 m3/h"      # all compressors at the speed they run
+# motor_efficiency = 0.92        # shaft over electrical power
+# heat_loss = "5 %"              # share of the compressor power that leaves through the shell
+# speed = "variable"             # fixed, steps or variable
+# lowest_speed = "30 %"          # with variable
+#| steps = 4                     # with speed = "steps"
+# rated_current = "50 A"         # nameplates of all motors
+# rated_power = "25 kW"
+# highest_suction = "0 degC"     # highest evaporating temperature, at pull-down
+
+# The maker's polynomials (AHRI 540, EN 12900) for the refrigerant of today, instead of the efficiencies:
+#| [compressor.polynomial]
+#| units = "SI"                  # degC, W, kg/h and A; or IP: degF, Btu/h, lb/h, W and A
+#| capacity = [1, 2, 3, 4, 5, 6, 7, 8, 9, 10]   # ten coefficients in the order of the standard
+#| mass_flow = [1, 2, 3, 4, 5, 6, 7, 8, 9, 10]   # or this, instead of the capacity
+#| power = [1, 2, 3, 4, 5, 6, 7, 8, 9, 10]
+#| current = [1, 2, 3, 4, 5, 6, 7, 8, 9, 10]   # or this, with the next three, instead of the power
+#| voltage = "400 V"
+#| phases = 3
+#| power_factor = 0.85
+#| superheat = "11.1 K"          # of the rating
+#| return_gas = "18.3 degC"      # or this, instead of the superheat
+#| subcooling = "0 K"            # of the capacity rating
+#| evaporating = ["-40 degC", "-5 degC"]   # range covered, dew temperatures
+#| condensing = ["25 degC", "55 degC"]
 
 [compare]
 candidates = ["R448A", "R449A", "R452A", "R454C"]
 match = "mean"                   # refrigerants are compared at equal mean (or dew) temperatures
+
+# [evaporator]                   # what it cools, at the duty above
+# medium = "air"                 # air, water or brine
+# inlet = "2 degC"
+# outlet = "-3 degC"
+#| flow = "8 kg/s"               # or the flow instead of the outlet,
+#| specific_heat = "1.006 kJ/(kg K)"   # with its specific heat
+# arrangement = "crossflow"      # counterflow, crossflow, or flooded (the refrigerant has one temperature)
+# film_factor = 1.0              # conductance with a candidate over today's; or one for each: {{R448A = 0.97}}
+# pressure_drop = "1 K"          # as a fall of the saturation temperature
+
+# [condenser]                    # what it warms, at the duty above; keys as for the evaporator
+# medium = "air"
+# inlet = "30 degC"
+# outlet = "36 degC"
+#| flow = "10 kg/s"
+#| specific_heat = "1.006 kJ/(kg K)"
+# arrangement = "crossflow"
+# film_factor = 1.0
+# pressure_drop = "0.5 K"
+
+# [readings]                     # what was measured on the running plant
+# date = "1 June 2026"
+# ambient = "25 degC"
+# load = "80 %"
+# suction_pressure = "3.3 bar g"
+# discharge_pressure = "17.2 bar g"
+# liquid_pressure = "17.0 bar g"
+# evaporator_outlet_temperature = "-5 degC"
+# suction_temperature = "0 degC"
+# discharge_temperature = "70 degC"
+# liquid_temperature = "35 degC"
+# power = "22 kW"
+# current = "37 A"               # with the next three it gives the power
+# voltage = "400 V"
+# phases = 3
+# power_factor = 0.85
+# evaporator_in = "2 degC"       # air, water or brine
+# evaporator_out = "-3 degC"
+# evaporator_flow = "8 kg/s"
+# evaporator_specific_heat = "1.006 kJ/(kg K)"
+# condenser_in = "25 degC"
+# condenser_out = "31 degC"
+# condenser_flow = "10 kg/s"
+# condenser_specific_heat = "1.006 kJ/(kg K)"
+# hours_per_day = 16
+
+# [lines.suction]
+# diameter = "54 mm"             # inside
+# length = "40 m"
+# riser = "5 m"                  # height of the part that goes up
+# fittings = "10 m"              # straight pipe that bends and valves amount to
+# roughness = "1.5 um"           # drawn copper
+# lowest_load = "30 %"           # of the duty
+
+# [lines.discharge]
+# diameter = "35 mm"
+# length = "20 m"
+# riser = "3 m"
+# fittings = "5 m"
+# roughness = "1.5 um"
+# lowest_load = "30 %"
+
+# [lines.liquid]
+# diameter = "28 mm"
+# length = "40 m"
+# riser = "3 m"
+# fittings = "5 m"
+# roughness = "1.5 um"
+
+# [valve]
+# kind = "thermostatic"          # thermostatic, electronic or capillary
+# liquid_line_loss = "0.3 bar"
+# distributor_loss = "1.5 bar"
+
+# [receiver]
+# volume = "120 l"
+
+# [controls]                     # settings today
+# low_pressure_cut_out = "1.0 bar g"
+# low_pressure_cut_in = "2.0 bar g"
+# high_pressure_cut_out = "25 bar g"
+# rack_set_point = "3.3 bar g"
+# evaporator_regulator = "3.8 bar g"
+# crankcase_regulator = "4.5 bar g"
+# head_pressure = "12 bar g"
+# fan_steps = ["12 bar g", "14 bar g"]
+
+# [thresholds]                   # your own, instead of those that the checks come with
+# capacity = {{work = 1.0, stop = 0.9}}
 """
 
 

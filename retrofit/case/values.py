@@ -40,8 +40,19 @@ class FileValue:
         """Return a value as a user could write it, or nothing."""
         return ""
 
-    def read(self, value: object, info: ValidationInfo) -> Any:
-        """Return the value as the model holds it; raises QuantityError with the complaint."""
+    def shown_kind(self) -> str:
+        """Return the kind of quantity to show the value as (a key of `UnitSystem.displays`), or nothing."""
+        return ""
+
+    def read(self, value: object, p_ambient_Pa: float | None = None) -> Any:
+        """Return the value as the model holds it.
+
+        Args:
+            value: What stands in the file. [-]
+            p_ambient_Pa: Air pressure at the plant, from which a gauge counts. [Pa]
+        Returns: The value in SI, or the word.
+        Raises: QuantityError with the whole complaint.
+        """
         raise NotImplementedError
 
     def json_schema(self) -> dict[str, Any]:
@@ -49,12 +60,19 @@ class FileValue:
         raise NotImplementedError
 
     def __get_pydantic_core_schema__(self, source: Any, handler: GetCoreSchemaHandler) -> CoreSchema:
-        return core_schema.with_info_plain_validator_function(self.read)
+        return core_schema.with_info_plain_validator_function(
+            lambda value, info: self.read(value, ambient_pressure_Pa(info))
+        )
 
-    def __get_pydantic_json_schema__(
-        self, schema: CoreSchema, handler: GetJsonSchemaHandler
-    ) -> dict[str, Any]:
+    def __get_pydantic_json_schema__(self, schema: CoreSchema, handler: GetJsonSchemaHandler) -> dict[str, Any]:
         return self.json_schema()
+
+
+def ambient_pressure_Pa(info: ValidationInfo) -> float | None:
+    """Return the air pressure that a reading is checked with, if it is known: of the plant, or the context. [Pa]"""
+    if "altitude_m" in info.data:
+        return standard_atmosphere_Pa(info.data["altitude_m"])
+    return None if info.context is None else float(info.context["p_ambient_Pa"])
 
 
 @dataclass(frozen=True)
@@ -67,47 +85,62 @@ class Quantity(FileValue):
     reason: str
     above_low: bool = False  # the lower end itself is not allowed
     example: str = ""
+    shown: str = ""  # the kind to show it as, if another
 
     def sample(self) -> str:
         """Return a quantity of this kind, as text."""
         return self.example or KINDS[self.kind].example
 
-    def read(self, value: object, info: ValidationInfo) -> float:
+    def shown_kind(self) -> str:
+        """Return the kind of quantity to show the value as."""
+        return self.shown or self.kind
+
+    def read(self, value: object, p_ambient_Pa: float | None = None) -> float:
         """Return the value in SI."""
         found = parse_quantity(value, self.kind)
         low, high = parse_quantity(self.low, self.kind), parse_quantity(self.high, self.kind)
         if found < low or found > high or (self.above_low and found == low):
-            raise QuantityError(_outside(value, self.low, self.high, self.reason, self.above_low))
+            raise QuantityError(outside(value, self.low, self.high, self.reason, self.above_low))
         return found
 
     def json_schema(self) -> dict[str, Any]:
-        """Return the pattern of the text; a fraction may also be a number."""
+        """Return the pattern of the text; a kind that needs no unit may also be a number."""
         text = {"type": "string", "pattern": unit_pattern(self.kind), "examples": [self.sample()]}
-        if self.kind != "fraction":
+        if "" not in KINDS[self.kind].units:
             return text
-        return {"anyOf": [{"type": "number", "minimum": 0, "maximum": 1}, text]}
+        low, high = (parse_quantity(end, self.kind) for end in (self.low, self.high))
+        return {"anyOf": [{"type": "number", "minimum": low, "maximum": high}, text]}
 
 
 @dataclass(frozen=True)
-class PressureLimit(FileValue):
-    """A pressure that says absolute or gauge; a gauge one counts from the air at the plant's altitude."""
+class AbsolutePressure(FileValue):
+    """A pressure that says absolute or gauge, held as absolute; a gauge counts from the air at the plant."""
 
     low: str
     high: str
     reason: str
 
-    def read(self, value: object, info: ValidationInfo) -> float:
-        """Return the absolute pressure in Pa; needs the altitude, read before it."""
-        p_ambient_Pa = standard_atmosphere_Pa(info.data.get("altitude_m", 0.0))
-        p_Pa = parse_pressure(value).absolute_Pa(p_ambient_Pa)
+    def sample(self) -> str:
+        """Return a pressure, as text."""
+        return KINDS["pressure"].example
+
+    def shown_kind(self) -> str:
+        """Return the kind of quantity to show the value as."""
+        return "pressure"
+
+    def read(self, value: object, p_ambient_Pa: float | None = None) -> float:
+        """Return the absolute pressure in Pa; raises LookupError if a gauge one is read without `p_ambient_Pa`."""
+        pressure = parse_pressure(value)
+        if pressure.is_gauge and p_ambient_Pa is None:
+            raise LookupError("a gauge pressure needs the air pressure at the plant; pass it as context")
+        p_Pa = pressure.absolute_Pa(p_ambient_Pa or 0.0)
         if not parse_pressure(self.low).value_Pa <= p_Pa <= parse_pressure(self.high).value_Pa:
-            raise QuantityError(_outside(value, self.low, self.high, self.reason))
+            raise QuantityError(outside(value, self.low, self.high, self.reason))
         return p_Pa
 
     def json_schema(self) -> dict[str, Any]:
         """Return the pattern of the text."""
-        example = KINDS["pressure"].example
-        return {"type": "string", "pattern": unit_pattern("pressure"), "examples": [example]}
+        return {"type": "string", "pattern": unit_pattern("pressure"), "examples": [self.sample()]}
 
 
 @dataclass(frozen=True)
@@ -117,7 +150,11 @@ class Choice(FileValue):
     words: tuple[str, ...]
     hints: tuple[tuple[str, str], ...] = ()  # what people write instead, and the word for it
 
-    def read(self, value: object, info: ValidationInfo) -> str:
+    def sample(self) -> str:
+        """Return the first word."""
+        return self.words[0]
+
+    def read(self, value: object, p_ambient_Pa: float | None = None) -> str:
         """Return the word."""
         allowed = listed(f'"{word}"' for word in self.words)
         if not isinstance(value, str):
@@ -143,7 +180,7 @@ class Refrigerant(FileValue):
         """Return a designation."""
         return "R404A"
 
-    def read(self, value: object, info: ValidationInfo) -> str:
+    def read(self, value: object, p_ambient_Pa: float | None = None) -> str:
         """Return the designation in its normal spelling."""
         if not isinstance(value, str):
             wanted = f'a refrigerant is needed; write its designation, as in "{self.sample()}"'
@@ -161,7 +198,7 @@ class Text(FileValue):
 
     longest: int
 
-    def read(self, value: object, info: ValidationInfo) -> str:
+    def read(self, value: object, p_ambient_Pa: float | None = None) -> str:
         """Return the text with every run of blanks and line ends as one blank."""
         if not isinstance(value, str):
             raise QuantityError(f"{described(value)} stands where a text is needed; write it in quotes")
@@ -212,14 +249,14 @@ def unit_pattern(kind: str) -> str:
 
 def _spellings(unit: str) -> str:
     """Return a pattern of one unit with the blanks and signs that reading accepts."""
-    parts = re.findall(r"deg|[A-Za-z]+|[0-9]|.", unit)
-    allowed = {"deg": "(deg|°)", "3": "[3³]"}
+    parts = re.findall("deg|.", unit)
+    allowed = {"deg": r"(d\s*e\s*g|°)", "3": "[3³]"}
     return r"\s*".join(allowed.get(part, re.escape(part)) for part in parts)
 
 
 def _pressure_spellings(unit: str) -> str:
     """Return a pattern of one unit of pressure: its mark may stand apart or in brackets."""
-    return rf"{unit[:-1]}\s*\(?{unit[-1]}\)?"
+    return rf"{_spellings(unit[:-1])}\s*\(?{unit[-1]}\)?"
 
 
 def _designation_pattern() -> str:
@@ -231,6 +268,7 @@ def _designation_pattern() -> str:
     return rf"^\s*[Rr]?[\s-]*({'|'.join(either_case)})\s*$"
 
 
-def _outside(value: object, low: str, high: str, reason: str, above_low: bool = False) -> str:
+def outside(value: object, low: str, high: str, reason: str, above_low: bool = False) -> str:
+    """Return the complaint about a value outside its range, with the range and its reason."""
     start = f"above {low} and up to {high}" if above_low else f"{low} to {high}"
     return f"{quoted(str(value))} is outside what is allowed: {start} ({reason})"

@@ -4,7 +4,8 @@ Run from the top of the repository:
 
     python tests/bench/broken_cases.py [--count 5000] [--seed 1] [--command 40] [--keep FOLDER]
 
-Each file is a shipped case with one to four faults, drawn by a seeded generator. The script prints how
+Each file is a shipped case, or the starting case with its remarks taken in, with one to four faults, drawn by
+a seeded generator. The script prints how
 many were still valid, how many were refused and how many ended in a traceback; it ends with 1 if any did.
 With `--command N` the first N files also go through `python -m retrofit check FILE`, which has to end
 with 0 or 2 and without a traceback.
@@ -14,6 +15,7 @@ from __future__ import annotations
 
 import argparse
 import random
+import re
 import subprocess
 import sys
 import tempfile
@@ -26,7 +28,7 @@ from pathlib import Path
 TOP = Path(__file__).resolve().parents[2]
 sys.path.insert(0, str(TOP))
 
-from retrofit.case import read_case  # noqa: E402 - the script runs without an installed package
+from retrofit.case import new_case_text, read_case  # noqa: E402 - the script runs without an installed package
 from retrofit.errors import CaseFileError  # noqa: E402
 
 Fault = Callable[[bytes, random.Random], bytes]
@@ -71,6 +73,14 @@ ODD_VALUES = (
     '"' + "k" * 100_000 + '"',
     "'''\n[duty]\ncooling = 1\n'''",
     '"""a\\\n   b"""',
+    "[[2, 0.6, 0.9], [3, 0.7]]",
+    '["12 bar g", "11 bar g", 10]',
+    "{R32 = 1.1, R999 = nan}",
+    "{work = 0.9, stop = 1e400}",
+    str(list(range(11))),
+    '"0.3 bar"',
+    '"4.19 kJ/(kg K)"',
+    '"92 A"',
 )
 
 
@@ -114,7 +124,27 @@ def odd_value(data: bytes, draw: random.Random) -> bytes:
 
 
 def wrong_unit(data: bytes, draw: random.Random) -> bytes:
-    units = ("degC", "kW", "K", "kg", "bar g", "m3/h", "degc", "KW", "furlong", "", "%", "°C", "F deg")
+    units = (
+        "degC",
+        "kW",
+        "K",
+        "kg",
+        "bar g",
+        "m3/h",
+        "bar",
+        "mm",
+        "A",
+        "V",
+        "h",
+        "kg/s",
+        "degc",
+        "KW",
+        "furlong",
+        "",
+        "%",
+        "°C",
+        "F deg",
+    )
     number = draw.choice(("5", "-8", "0", "1e9", "1e-9", "+4.", ".5", "1 000", "1_000", "--1"))
     return _with_value(data, draw, lambda old: f'"{number} {draw.choice(units)}"'.encode())
 
@@ -137,17 +167,13 @@ def nest(data: bytes, draw: random.Random) -> bytes:
 
 
 def odd_text(data: bytes, draw: random.Random) -> bytes:
-    odd = draw.choice(
-        ("\ufeff", "\x1b[2J", "\x9b", "\x00", "\u202e", "°", "٣", "🧊", "\r", "\r\n", "\u2028", "\x7f")
-    )
+    odd = draw.choice(("\ufeff", "\x1b[2J", "\x9b", "\x00", "\u202e", "°", "٣", "🧊", "\r", "\r\n", "\u2028", "\x7f"))
     place = draw.randrange(len(data) + 1)
     return data[:place] + odd.encode() + data[place:]
 
 
 def other_encoding(data: bytes, draw: random.Random) -> bytes:
-    return data.decode("utf-8", "replace").encode(
-        draw.choice(("utf-16", "utf-32", "utf-8-sig", "cp500")), "replace"
-    )
+    return data.decode("utf-8", "replace").encode(draw.choice(("utf-16", "utf-32", "utf-8-sig", "cp500")), "replace")
 
 
 def odd_structure(data: bytes, draw: random.Random) -> bytes:
@@ -162,6 +188,13 @@ def odd_structure(data: bytes, draw: random.Random) -> bytes:
         "]]",
         "= 5",
         "a.b",
+        "[evaporator]",
+        "[lines.suction.length]",
+        "[compressor.polynomial]",
+        "lines.suction = 5",
+        "[thresholds.a.b]",
+        "evaporator.inlet = '2 degC'",
+        '[thresholds]\n"\\u001b" = {}',
     )
     lines = data.split(b"\n")
     lines.insert(draw.randrange(len(lines)), draw.choice(odd).encode())
@@ -236,17 +269,23 @@ def command_outcome(path: Path) -> str:
     return f"command exit {done.returncode}" if is_clean else "command fault"
 
 
+def full_case() -> bytes:
+    """Return the starting case with its remarks taken in: it has nearly every table and key."""
+    lines = new_case_text().splitlines()
+    is_key = re.compile(r"# (\[|\w+ = )")
+    return "\n".join(line.removeprefix("# ") if is_key.match(line) else line for line in lines).encode()
+
+
 def main() -> int:
     """Run the benchmark and return the exit code."""
     options = argparse.ArgumentParser(description=(__doc__ or "").splitlines()[0])
     options.add_argument("--count", type=int, default=5000, help="files to read (5000)")
     options.add_argument("--seed", type=int, default=1, help="seed of the faults (1)")
-    options.add_argument(
-        "--command", type=int, default=0, metavar="N", help="also run the command on N files"
-    )
+    options.add_argument("--command", type=int, default=0, metavar="N", help="also run the command on N files")
     options.add_argument("--keep", type=Path, help="folder to keep the files that end badly in")
     asked = options.parse_args()
     shipped = [path.read_bytes() for path in sorted((TOP / "cases").glob("*.toml"))]
+    shipped += [full_case()] * 3
     draw = random.Random(asked.seed)
     counts: Counter[str] = Counter()
     start = time.perf_counter()

@@ -26,31 +26,6 @@ candidates = ["R448A", "R449A"]
 """
 
 
-@pytest.fixture
-def case(tmp_path):
-    """Return a function that writes a case file and reads it."""
-
-    def read(text):
-        path = tmp_path / "plant.toml"
-        path.write_bytes(text if isinstance(text, bytes) else text.encode())
-        return read_case(path)
-
-    return read
-
-
-@pytest.fixture
-def complaints(case):
-    """Return a function that writes a case file and returns its problems as (line, key, text)."""
-
-    def read(text):
-        with pytest.raises(CaseFileError) as refusal:
-            case(text)
-        assert refusal.value.exit_code == 2
-        return [(problem.line, problem.key, problem.text) for problem in refusal.value.problems]
-
-    return read
-
-
 def test_the_shortest_case_takes_every_default_and_says_so(case):
     """Only refrigerant, duty and candidates are needed; each default taken is on the list."""
     read = case(SHORT)

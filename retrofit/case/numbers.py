@@ -1,0 +1,159 @@
+"""Values of a case file that are bare numbers: counts, coefficients, and small tables of numbers."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+from typing import Any, NamedTuple
+
+from retrofit.case.values import FileValue, designation_of, outside
+from retrofit.errors import QuantityError
+from retrofit.units import described, listed, quoted
+
+LARGEST_NUMBER = 1e15
+
+
+@dataclass(frozen=True)
+class Number(FileValue):
+    """A number without unit, within a range; `whole` for a count."""
+
+    low: float
+    high: float
+    reason: str
+    whole: bool = False
+    example: str = "1.0"
+
+    def sample(self) -> str:
+        """Return a number, as text."""
+        return self.example
+
+    def read(self, value: object, p_ambient_Pa: float | None = None) -> float | int:
+        """Return the number."""
+        thing = "a whole number" if self.whole else "a number"
+        found = _number(value, thing, self.example)
+        if self.whole and found != int(found):
+            raise QuantityError(f"{found:g} is not a whole number; write a count, as in {self.example}")
+        if not self.low <= found <= self.high:
+            raise QuantityError(outside(f"{found:g}", f"{self.low:g}", f"{self.high:g}", self.reason))
+        return int(found) if self.whole else found
+
+    def json_schema(self) -> dict[str, Any]:
+        """Return the type of the number and its range."""
+        return {"type": "integer" if self.whole else "number", "minimum": self.low, "maximum": self.high}
+
+
+@dataclass(frozen=True)
+class OneOf(FileValue):
+    """One number out of a few."""
+
+    numbers: tuple[int, ...]
+
+    def sample(self) -> str:
+        """Return the last number, as text."""
+        return str(self.numbers[-1])
+
+    def read(self, value: object, p_ambient_Pa: float | None = None) -> int:
+        """Return the number."""
+        found = _number(value, "a whole number", self.sample())
+        if found not in self.numbers:
+            raise QuantityError(f"{found:g} is not possible here; write {listed(map(str, self.numbers))}")
+        return int(found)
+
+    def json_schema(self) -> dict[str, Any]:
+        """Return the list of numbers."""
+        return {"enum": list(self.numbers)}
+
+
+class EfficiencyPoint(NamedTuple):
+    """Efficiencies of the compressor at one pressure ratio. [-]"""
+
+    pressure_ratio: float
+    isentropic_efficiency: float
+    volumetric_efficiency: float
+
+
+@dataclass(frozen=True)
+class PointValue(FileValue):
+    """A list of three numbers: pressure ratio, isentropic and volumetric efficiency."""
+
+    def sample(self) -> str:
+        """Return a point, as text."""
+        return "[4, 0.70, 0.86]"
+
+    def read(self, value: object, p_ambient_Pa: float | None = None) -> EfficiencyPoint:
+        """Return the point."""
+        if not isinstance(value, list) or len(value) != 3:
+            wanted = "three numbers are needed: pressure ratio, isentropic and volumetric efficiency"
+            raise QuantityError(f"{described(value)} stands where {wanted}, as in {self.sample()}")
+        ratio, *efficiencies = (_number(item, "a number", self.sample()) for item in value)
+        if not 1.0 < ratio <= 100.0:
+            raise QuantityError(f"pressure ratio {ratio:g} is outside what is allowed: above 1 and up to 100")
+        for name, found in zip(("isentropic", "volumetric"), efficiencies, strict=True):
+            if not 0.0 < found <= 1.0:
+                raise QuantityError(f"{name} efficiency {found:g} is outside what is allowed: above 0 and up to 1")
+        return EfficiencyPoint(ratio, *efficiencies)
+
+    def json_schema(self) -> dict[str, Any]:
+        """Return a list of three numbers."""
+        return {"type": "array", "items": {"type": "number"}, "minItems": 3, "maxItems": 3}
+
+
+@dataclass(frozen=True)
+class FilmFactors:
+    """Overall conductance of an exchanger with a refrigerant, over that with today's.
+
+    Attributes:
+        others: The factor of every refrigerant that `by_refrigerant` does not name. [-]
+        by_refrigerant: Factor by designation. [-]
+    """
+
+    others: float = 1.0
+    by_refrigerant: tuple[tuple[str, float], ...] = ()
+
+    def of(self, refrigerant: str) -> float:
+        """Return the factor of a refrigerant, by its designation. [-]"""
+        return dict(self.by_refrigerant).get(refrigerant, self.others)
+
+
+@dataclass(frozen=True)
+class FilmFactorValue(FileValue):
+    """A number for every candidate, or a table of designation and number."""
+
+    factor = Number(0.1, 10.0, "an exchanger does not change more than tenfold")
+
+    def sample(self) -> str:
+        """Return a factor, as text."""
+        return "1.0"
+
+    def read(self, value: object, p_ambient_Pa: float | None = None) -> FilmFactors:
+        """Return the factors."""
+        if not isinstance(value, Mapping):
+            return FilmFactors(self.factor.read(value))
+        found: dict[str, float] = {}
+        for name, factor in value.items():
+            designation = designation_of(name)
+            if designation in found:
+                raise QuantityError(f"{designation} is in the table twice; leave one out")
+            found[designation] = self._of_one(name, factor)
+        return FilmFactors(by_refrigerant=tuple(found.items()))
+
+    def _of_one(self, name: str, factor: object) -> float:
+        try:
+            return self.factor.read(factor)
+        except QuantityError as error:
+            raise QuantityError(f"{quoted(name)}: {error}") from None
+
+    def json_schema(self) -> dict[str, Any]:
+        """Return a number, or a table of numbers."""
+        number = self.factor.json_schema()
+        return {"anyOf": [number, {"type": "object", "additionalProperties": number}]}
+
+
+def _number(value: object, thing: str, example: str) -> float:
+    if isinstance(value, str):
+        raise QuantityError(f"{quoted(value)} is a text; write {thing} without quotes, as in {example}")
+    if isinstance(value, bool) or not isinstance(value, int | float):
+        raise QuantityError(f"{described(value)} stands where {thing} is needed; write it as in {example}")
+    if not abs(value) <= LARGEST_NUMBER:  # also catches NaN
+        raise QuantityError(f"this is not a number of a sensible size; write {thing}, as in {example}")
+    return float(value)

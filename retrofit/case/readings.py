@@ -1,0 +1,95 @@
+"""What was measured on the running plant, and the controls as they are set."""
+
+from __future__ import annotations
+
+from typing import Annotated
+
+from pydantic import Field
+
+from retrofit.case.compressor import CURRENT, PHASES, POWER_FACTOR, VOLTAGE
+from retrofit.case.exchangers import FLOW, SPECIFIC_HEAT
+from retrofit.case.table import Items, Table, key
+from retrofit.case.values import AbsolutePressure, Quantity, Text
+
+MOST_FAN_STEPS = 20
+_PRESSURE = Annotated[float | None, AbsolutePressure("0.01 bar a", "300 bar a", "gauges of plants lie within it")]
+_SETTING = AbsolutePressure("0.01 bar a", "300 bar a", "controls of plants lie within it")
+_SET = Annotated[float | None, _SETTING]
+_TEMPERATURE = Annotated[
+    float | None, Quantity("temperature", "-120 degC", "250 degC", "pipes of plants lie within it")
+]
+_SECONDARY = Annotated[
+    float | None, Quantity("temperature", "-100 degC", "150 degC", "air, water and brine lie within it")
+]
+
+
+class Readings(Table):
+    """What was measured on the running plant; whatever was not measured is left out."""
+
+    date: Annotated[str | None, Text(40)] = key("date", "When the readings were taken.", None)
+    ambient_K: Annotated[
+        float | None, Quantity("temperature", "-60 degC", "60 degC", "outdoor air lies within it", example="25 degC")
+    ] = key("ambient", "Temperature of the outdoor air during the readings.", None)
+    load: Annotated[
+        float | None,
+        Quantity("fraction", "0 %", "100 %", "a share of the full duty", above_low=True, example="80 %"),
+    ] = key("load", "Load during the readings, as a share of the full duty.", None)
+    suction_pressure_Pa: _PRESSURE = key("suction_pressure", "Pressure at the compressor inlet.", None)
+    discharge_pressure_Pa: _PRESSURE = key("discharge_pressure", "Pressure at the compressor outlet.", None)
+    liquid_pressure_Pa: _PRESSURE = key("liquid_pressure", "Pressure in the liquid line.", None)
+    evaporator_outlet_temperature_K: _TEMPERATURE = key(
+        "evaporator_outlet_temperature", "Pipe temperature at the evaporator outlet.", None
+    )
+    suction_temperature_K: _TEMPERATURE = key("suction_temperature", "Pipe temperature at the compressor inlet.", None)
+    discharge_temperature_K: _TEMPERATURE = key(
+        "discharge_temperature", "Pipe temperature at the compressor outlet.", None
+    )
+    liquid_temperature_K: _TEMPERATURE = key(
+        "liquid_temperature", "Pipe temperature of the liquid before the expansion valve.", None
+    )
+    power_W: Annotated[
+        float | None, Quantity("power", "0 W", "100 MW", "no single plant takes more", above_low=True, example="54 kW")
+    ] = key("power", "Electrical power of the compressors.", None)
+    current_A: Annotated[float | None, CURRENT] = key("current", "Current of the compressors.", None)
+    voltage_V: Annotated[float | None, VOLTAGE] = key("voltage", "Voltage between phases, or of the one phase.", None)
+    phases: Annotated[int | None, PHASES] = key("phases", "Phases of the supply, 1 or 3.", None)
+    power_factor: Annotated[float | None, POWER_FACTOR] = key("power_factor", "Power factor of the motors.", None)
+    evaporator_in_K: _SECONDARY = key("evaporator_in", "Air, water or brine entering the evaporator.", None)
+    evaporator_out_K: _SECONDARY = key("evaporator_out", "Air, water or brine leaving the evaporator.", None)
+    evaporator_flow_kg_per_s: Annotated[float | None, FLOW] = key(
+        "evaporator_flow", "Mass flow of air, water or brine through the evaporator.", None
+    )
+    evaporator_specific_heat_J_per_kgK: Annotated[float | None, SPECIFIC_HEAT] = key(
+        "evaporator_specific_heat", "Specific heat of what flows through the evaporator.", None
+    )
+    condenser_in_K: _SECONDARY = key("condenser_in", "Air, water or brine entering the condenser.", None)
+    condenser_out_K: _SECONDARY = key("condenser_out", "Air, water or brine leaving the condenser.", None)
+    condenser_flow_kg_per_s: Annotated[float | None, FLOW] = key(
+        "condenser_flow", "Mass flow of air, water or brine through the condenser.", None
+    )
+    condenser_specific_heat_J_per_kgK: Annotated[float | None, SPECIFIC_HEAT] = key(
+        "condenser_specific_heat", "Specific heat of what flows through the condenser.", None
+    )
+    hours_per_day: Annotated[float | None, Quantity("hours per day", "0", "24", "a day has no more")] = key(
+        "hours_per_day", "Hours that the compressors run in a day.", None
+    )
+
+
+class Controls(Table):
+    """Settings of the controls today; a gauge pressure is held as absolute."""
+
+    low_pressure_cut_out_Pa: _SET = key("low_pressure_cut_out", "Low-pressure switch stops the compressor.", None)
+    low_pressure_cut_in_Pa: _SET = key("low_pressure_cut_in", "Low-pressure switch lets it start again.", None)
+    high_pressure_cut_out_Pa: _SET = key("high_pressure_cut_out", "High-pressure switch stops the compressor.", None)
+    rack_set_point_Pa: _SET = key("rack_set_point", "Suction pressure that the control of the rack holds.", None)
+    evaporator_regulator_Pa: _SET = key(
+        "evaporator_regulator", "Pressure that the evaporator pressure regulator holds.", None
+    )
+    crankcase_regulator_Pa: _SET = key(
+        "crankcase_regulator", "Highest suction pressure that the crankcase regulator lets through.", None
+    )
+    head_pressure_Pa: _SET = key("head_pressure", "Lowest condensing pressure that the control holds.", None)
+    fan_steps_Pa: Annotated[
+        Annotated[tuple[Annotated[float, _SETTING], ...], Field(min_length=1, max_length=MOST_FAN_STEPS)] | None,
+        Items(_SETTING, f'a list of 1 to {MOST_FAN_STEPS} pressures, as in ["12 bar g", "14 bar g"]'),
+    ] = key("fan_steps", "Pressures at which the condenser fans come on, rising.", None)

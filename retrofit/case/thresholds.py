@@ -1,0 +1,33 @@
+"""The user's own thresholds of the checks; the checks know the names, this room does not."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from typing import Annotated
+
+from pydantic import ConfigDict
+
+from retrofit.case.numbers import Number
+from retrofit.case.table import Table, key
+
+_LEVEL = Annotated[float | None, Number(-1e9, 1e9, "thresholds lie within it", example="0.95")]
+
+
+class Threshold(Table):
+    """The numbers from which one check speaks, by level."""
+
+    note: _LEVEL = key("note", "From here the check leaves a note.", None)
+    work: _LEVEL = key("work", "From here the check asks for work.", None)
+    stop: _LEVEL = key("stop", "From here the check says stop.", None)
+
+
+class Thresholds(Table):
+    """The user's own thresholds, by the name of each."""
+
+    model_config = ConfigDict(frozen=True, extra="allow", defer_build=True)
+    __pydantic_extra__: dict[str, Threshold]
+
+    @property
+    def by_name(self) -> Mapping[str, Threshold]:
+        """The thresholds given, by name."""
+        return self.__pydantic_extra__
