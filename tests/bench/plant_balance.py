@@ -2,7 +2,7 @@
 
 Run by hand: python tests/bench/plant_balance.py
 The scripted solve asks the property library's high-level interface for every state and solves the two equations
-with scipy, for a few conditions of R448A. Exit status 1 if the year takes more than 10 s, a condition is not
+with scipy, for one condition of R448A. Exit status 1 if the year takes more than 10 s, a condition is not
 solved to 1e-6, or a condition costs more than a thousandth of a scripted one.
 """
 
@@ -114,10 +114,10 @@ def main() -> int:
     year = time.perf_counter() - begin
     each = year / (len(fluids) * air.size)
     print(
-        f"{len(fluids)} candidates x {air.size} conditions: {year:.2f} s, {each * 1e6:.1f} us a condition (at most 10 s)"
+        f"{len(fluids)} candidates x {air.size} conditions: {year:.2f} s (at most 10), {each * 1e6:.1f} us a condition"
     )
     print(f"largest residual {worst:.1e} (at most 1e-6), not solved {unsolved}")
-    scripted = scripted_seconds(machine, [300.15, 305.15, 310.15])
+    scripted = scripted_seconds(machine, [305.15])  # a minute or two: one condition says enough
     print(f"scripted: {scripted:.2f} s a condition, {scripted / each:.0f} times as much (at least 1000)")
     return int(year > 10.0 or worst > 1e-6 or unsolved > 0 or scripted / each < 1000.0)
 
