@@ -6,6 +6,7 @@ Read one with `read_case`; every complaint arrives at once in a `CaseFileError`.
 from retrofit.case.compressor import Compressor, Polynomial
 from retrofit.case.exchangers import Condenser, Evaporator, Exchanger
 from retrofit.case.keys import meaning, quantity
+from retrofit.case.law import EQUIPMENT, Law
 from retrofit.case.model import Case, Default
 from retrofit.case.numbers import EfficiencyPoint, FilmFactors
 from retrofit.case.pipework import GasLine, Lines, LiquidLine, Receiver, Valve
@@ -17,6 +18,7 @@ from retrofit.case.template import new_case_text
 from retrofit.case.thresholds import Threshold, Thresholds
 
 __all__ = [
+    "EQUIPMENT",
     "SCHEMA_FILE",
     "Case",
     "Compare",
@@ -30,6 +32,7 @@ __all__ = [
     "Exchanger",
     "FilmFactors",
     "GasLine",
+    "Law",
     "Lines",
     "LiquidLine",
     "Plant",

@@ -16,6 +16,7 @@ from pydantic.fields import FieldInfo
 
 from retrofit.case.compressor import Compressor
 from retrofit.case.exchangers import Condenser, Evaporator
+from retrofit.case.law import Law
 from retrofit.case.pipework import Lines, Receiver, Valve
 from retrofit.case.plant import Compare, Duty, Plant
 from retrofit.case.readings import Controls, Readings
@@ -44,6 +45,7 @@ class CaseFile(Table):
     valve: Valve | None = key("valve", "The expansion valves.", None)
     receiver: Receiver | None = key("receiver", "The liquid receiver of the high side.", None)
     controls: Controls | None = key("controls", "Settings of the controls today.", None)
+    law: Law | None = key("law", "Where the plant stands in law, and for how long.", None)
     thresholds: Thresholds | None = key("thresholds", "The user's own thresholds of the checks.", None)
 
 
@@ -108,4 +110,5 @@ class Case:
     valve: Valve | None = None
     receiver: Receiver | None = None
     controls: Controls | None = None
+    law: Law | None = None
     thresholds: Thresholds | None = None

@@ -79,6 +79,8 @@ def _given(data: Mapping[str, Any], table: str = "") -> Iterator[tuple[str, str]
 
 
 def _as_text(value: object) -> str:
+    if isinstance(value, bool):
+        return str(value).lower()
     if isinstance(value, dict):
         return ", ".join(f"{key} = {item}" for key, item in value.items())
     return ", ".join(str(item) for item in value) if isinstance(value, list) else str(value)
@@ -127,7 +129,7 @@ def _defaults_of(name: str, table_class: type[Table], written: set[str | None]) 
         if why is None or field.alias in written:
             continue
         if (not why.beside or why.beside in written) and not written & set(why.unless):
-            yield Default(f"{name}.{field.alias}", str(field.default), why.text)
+            yield Default(f"{name}.{field.alias}", _as_text(field.default), why.text)
 
 
 # Where a problem stands

@@ -42,6 +42,7 @@ ORDERS = (
     Order("controls.crankcase_regulator", "below", "controls.high_pressure_cut_out", _SWITCHES),
     Order("controls.head_pressure", "below", "controls.high_pressure_cut_out", _SWITCHES),
     Order("plant.relief_setting", "above", "controls.high_pressure_cut_out", _SWITCHES),
+    Order("law.end", "above", "law.date_of_change", "the plant runs on after the change"),
     *(
         Order(f"lines.{line}.riser", "at most", f"lines.{line}.length", "the riser is a part of the line")
         for line in ("suction", "discharge", "liquid")
@@ -72,6 +73,7 @@ NOT_BOTH = (
     ("compressor.polynomial", "compressor.isentropic_efficiency", _MAKERS),
     ("compressor.polynomial", "compressor.volumetric_efficiency", _MAKERS),
     ("compressor.polynomial", "compressor.efficiency_points", _MAKERS),
+    ("law.end", "law.remaining_life", "the end says how long the plant runs; leave one of the two out"),
     *(
         (f"{way}.outlet", f"{way}.{key}", _OUTLET)
         for way in ("evaporator", "condenser")

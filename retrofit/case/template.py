@@ -159,6 +159,18 @@ match = "mean"                   # refrigerants are compared at equal mean (or d
 # head_pressure = "12 bar g"
 # fan_steps = ["12 bar g", "14 bar g"]
 
+# [law]                          # tables of law are data, not advice: check the current text
+# jurisdiction = "EU"            # a name that the tables of law use
+# date_of_change = "2027-04-01"
+# remaining_life = "8 years"     # that the plant runs after the change
+#| end = "2035-03-31"            # or the day it stops, instead of the remaining life
+# equipment = "supermarket"      # kind of equipment, as the tables name it
+# hermetically_sealed = false    # and labelled so
+# leak_detection_system = true
+# annual_leak_rate = "15 %"      # of the charge
+# product_below_minus_50 = false   # whether a product is cooled below -50 degC
+# code = "EN 378"                # charge rules for the room: ASHRAE 15, EN 378, ISO 5149 or both
+
 # [thresholds]                   # your own, instead of those that the checks come with
 # capacity = {{work = 1.0, stop = 0.9}}
 """

@@ -27,7 +27,7 @@ def parse_quantity(value: object, kind: str) -> float:
     Args:
         value: The text, such as "-8 degC"; a fraction may also be a number. [-]
         kind: A key of `KINDS` other than "pressure", which has its own function. [-]
-    Returns: The quantity. [SI unit of its kind; hours per day stay h/d]
+    Returns: The quantity. [SI unit of its kind; hours per day stay h/d, years stay years]
     Raises: QuantityError if it is no quantity of that kind; the message says how to write one.
     Source: factors of NIST SP 811 (2008), appendix B; no range is checked here.
     >>> parse_quantity("-8 degC", "temperature")

@@ -175,5 +175,8 @@ KINDS: Mapping[str, Kind] = {
     "hours per day": Kind(
         "a number of hours per day", "h", "16 h", {"": Unit(1.0), "h": Unit(1.0)}, "a bare number (16) or with h"
     ),
+    "years": Kind(
+        "a number of years", "years", "8 years", {"": Unit(1.0), "years": Unit(1.0), "year": Unit(1.0)}, "years"
+    ),
     "fraction": Kind("a fraction", "%", "68 %", {"": Unit(1.0), "%": Unit(1e-2)}, "a bare number (0.68) or with %"),
 }

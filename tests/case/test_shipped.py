@@ -273,6 +273,7 @@ def test_a_new_case_reads_with_the_other_ways_taken_in(tmp_path):
         "#| current",
         "#| return_gas",
         "# outlet",
+        "# remaining_life",
     )
     for other in without:
         text = text.replace(f"\n{other}", f"\n# without {other}")
