@@ -34,6 +34,7 @@ SP811 = [
     ("1 lb/h", "mass flow", 1.259979e-4),
     ("1 cfm", "volume flow", 4.719474e-4),  # cubic foot per minute
     ("1 ft3", "volume", 2.831685e-2),
+    ("1 ft2", "area", 9.290304e-2),  # exact
     ("1 ft", "length", 3.048e-1),
     ("1 l", "volume", 1e-3),
     ("1 in", "length", 2.54e-2),
@@ -52,6 +53,8 @@ SP811_SHOWN = [
     ("pressure difference", 6.894757e3),  # psi
     ("diameter", 2.54e-2),  # in, exact
     ("volume", 2.831685e-2),  # ft³
+    ("room volume", 2.831685e-2),
+    ("area", 9.290304e-2),  # ft², exact
     ("density", 1.601846e1),  # lb/ft³
     ("volumetric capacity", 3.725895e4),  # Btu_IT/ft³
     ("pressure", 6.894757e3),  # psi

@@ -13,6 +13,7 @@ from retrofit.case.pipework import GasLine, Lines, LiquidLine, Receiver, Valve
 from retrofit.case.plant import Compare, Duty, Plant
 from retrofit.case.reader import read_case
 from retrofit.case.readings import Controls, Readings
+from retrofit.case.room import MachineryRoom, Room
 from retrofit.case.schema import SCHEMA_FILE, case_schema
 from retrofit.case.template import new_case_text
 from retrofit.case.thresholds import Threshold, Thresholds
@@ -35,10 +36,12 @@ __all__ = [
     "Law",
     "Lines",
     "LiquidLine",
+    "MachineryRoom",
     "Plant",
     "Polynomial",
     "Readings",
     "Receiver",
+    "Room",
     "Threshold",
     "Thresholds",
     "Valve",

@@ -17,6 +17,7 @@ from retrofit.units import SI, listed, quoted
 
 Complaints = Iterator[tuple[KeyPath, str]]
 
+LOWEST_ROOM_M, HIGHEST_ROOM_M = 1.5, 100.0
 LARGEST_POWER_RATIO = 1.25  # electrical power read over that of the current read, or the other way round
 _THRESHOLD_NAME = re.compile(r"[A-Za-z0-9_-]{1,60}")
 
@@ -38,6 +39,7 @@ def problems_between_keys(written: Written) -> Complaints:
         yield from _capacity_rate(written, way)
     yield from _superheat_above_inlet(written)
     yield from _feeding(written)
+    yield from _room_height(written)
     yield from _speed(written)
     yield from _current_alone(written)
     yield from _power_against_current(written)
@@ -138,6 +140,20 @@ def _feeding(written: Written) -> Complaints:
             path_of("evaporator.arrangement"),
             f'"{arrangement}" does not go with plant.evaporator "{feed}"; '
             "a flooded evaporator is flooded in both places, one with direct expansion in neither",
+        )
+
+
+def _room_height(written: Written) -> Complaints:
+    """A room lower than a person or higher than a tower is a slip in volume or area."""
+    for table in ("room", "machinery_room"):
+        volume_m3, area_m2 = written.value(f"{table}.volume"), written.value(f"{table}.area")
+        if volume_m3 is None or area_m2 is None or LOWEST_ROOM_M <= volume_m3 / area_m2 <= HIGHEST_ROOM_M:
+            continue
+        volume, area = (quoted(str(written.raw(f"{table}.{key}"))) for key in ("volume", "area"))
+        yield (
+            path_of(f"{table}.volume"),
+            f"{volume} over the area {area} makes a room {volume_m3 / area_m2:.3g} m high; correct one of the two "
+            f"(allowed: {LOWEST_ROOM_M:g} m to {HIGHEST_ROOM_M:g} m)",
         )
 
 

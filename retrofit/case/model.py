@@ -20,6 +20,7 @@ from retrofit.case.law import Law
 from retrofit.case.pipework import Lines, Receiver, Valve
 from retrofit.case.plant import Compare, Duty, Plant
 from retrofit.case.readings import Controls, Readings
+from retrofit.case.room import MachineryRoom, Room
 from retrofit.case.table import Table, key
 from retrofit.case.thresholds import Thresholds
 from retrofit.case.values import Text
@@ -45,6 +46,8 @@ class CaseFile(Table):
     valve: Valve | None = key("valve", "The expansion valves.", None)
     receiver: Receiver | None = key("receiver", "The liquid receiver of the high side.", None)
     controls: Controls | None = key("controls", "Settings of the controls today.", None)
+    room: Room | None = key("room", "The room that a leak would fill.", None)
+    machinery_room: MachineryRoom | None = key("machinery_room", "The machinery room.", None)
     law: Law | None = key("law", "Where the plant stands in law, and for how long.", None)
     thresholds: Thresholds | None = key("thresholds", "The user's own thresholds of the checks.", None)
 
@@ -111,4 +114,6 @@ class Case:
     receiver: Receiver | None = None
     controls: Controls | None = None
     law: Law | None = None
+    room: Room | None = None
+    machinery_room: MachineryRoom | None = None
     thresholds: Thresholds | None = None

@@ -42,6 +42,7 @@ ORDERS = (
     Order("controls.crankcase_regulator", "below", "controls.high_pressure_cut_out", _SWITCHES),
     Order("controls.head_pressure", "below", "controls.high_pressure_cut_out", _SWITCHES),
     Order("plant.relief_setting", "above", "controls.high_pressure_cut_out", _SWITCHES),
+    Order("room.largest_circuit", "at most", "plant.charge", "no circuit holds more than the whole plant"),
     Order("law.end", "above", "law.date_of_change", "the plant runs on after the change"),
     *(
         Order(f"lines.{line}.riser", "at most", f"lines.{line}.length", "the riser is a part of the line")
@@ -73,6 +74,7 @@ NOT_BOTH = (
     ("compressor.polynomial", "compressor.isentropic_efficiency", _MAKERS),
     ("compressor.polynomial", "compressor.volumetric_efficiency", _MAKERS),
     ("compressor.polynomial", "compressor.efficiency_points", _MAKERS),
+    ("room.mounting_height", "room.mounting", "the height says where the unit is; leave one of the two out"),
     ("law.end", "law.remaining_life", "the end says how long the plant runs; leave one of the two out"),
     *(
         (f"{way}.outlet", f"{way}.{key}", _OUTLET)

@@ -159,6 +159,28 @@ match = "mean"                   # refrigerants are compared at equal mean (or d
 # head_pressure = "12 bar g"
 # fan_steps = ["12 bar g", "14 bar g"]
 
+# [room]                         # the smallest occupied room that a leak can fill
+# name = "sales floor"
+# volume = "6000 m3"             # with what is permanently open to it
+# area = "1500 m2"
+# mounting = "wall"              # of the indoor unit: floor, window, wall or ceiling
+#| mounting_height = "2.5 m"     # or its height above the floor
+# access = "a"                   # a (general), b (supervised) or c (authorised)
+# occupancy = "other"            # institutional: people who cannot leave by themselves; or other
+# location = "II"                # I occupied space, II compressor outside it, III machinery room or open air,
+#                                  IV ventilated enclosure
+# below_ground = false
+# comfort = false                # whether the plant is for human comfort
+# ventilation = "natural"        # none, natural or mechanical
+# largest_circuit = "80 kg"      # charge of the largest independent circuit today
+# sealed = false                 # whether the system is sealed in the factory
+
+# [machinery_room]
+# volume = "200 m3"
+# area = "60 m2"
+# detector = true
+# ventilation = "1.5 m3/s"       # air flow of the emergency ventilation
+
 # [law]                          # tables of law are data, not advice: check the current text
 # jurisdiction = "EU"            # a name that the tables of law use
 # date_of_change = "2027-04-01"

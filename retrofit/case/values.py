@@ -250,7 +250,7 @@ def unit_pattern(kind: str) -> str:
 def _spellings(unit: str) -> str:
     """Return a pattern of one unit with the blanks and signs that reading accepts."""
     parts = re.findall("deg|.", unit)
-    allowed = {"deg": r"(d\s*e\s*g|°)", "3": "[3³]"}
+    allowed = {"deg": r"(d\s*e\s*g|°)", "2": "[2²]", "3": "[3³]"}
     return r"\s*".join(allowed.get(part, re.escape(part)) for part in parts)
 
 

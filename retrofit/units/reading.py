@@ -105,7 +105,7 @@ def _split(text: str, kind: Kind) -> tuple[float, str]:
     number = float(match.group().replace("\u2212", "-"))
     if not math.isfinite(number):
         raise QuantityError(f"{quoted(text)} is too large a number; {kind.how}")
-    return number, rest.replace(" ", "").replace("°", "deg").replace("³", "3")
+    return number, rest.replace(" ", "").replace("°", "deg").replace("²", "2").replace("³", "3")
 
 
 def _why_no_number(body: str) -> str:

@@ -156,6 +156,13 @@ KINDS: Mapping[str, Kind] = {
         {"m3": Unit(1.0), "l": Unit(1e-3), "L": Unit(1e-3), "ft3": Unit(CUBIC_FOOT_M3)},
         "m3, l or ft3",
     ),
+    "area": Kind(
+        "an area",
+        "m2",
+        "1500 m2",
+        {"m2": Unit(1.0), "ft2": Unit(FOOT_M**2)},
+        "m2 or ft2",
+    ),
     "specific heat": Kind(
         "a specific heat",
         "kJ/(kg K)",

@@ -420,7 +420,7 @@ def test_every_table_of_the_file_is_known():
         ("", "[thresholds]\ncapacity = {}", "thresholds.capacity", "it holds no number"),
         ("", '[thresholds]\n"ca\\u001bp" = {work = 1}', "thresholds.ca\\x1bp", "letters, digits"),
         ("inlet = '2 degC'", "", "plant.inlet", "inlet belongs in [evaporator] or [condenser], not in [plant]"),
-        ("volume = '250 l'", "", "plant.volume", "volume belongs in [receiver], not in [plant]"),
+        ("volume = '250 l'", "", "plant.volume", "belongs in [receiver], [room] or [machinery_room], not"),
         ("suction = {}", "", "plant.suction", "belongs in a table of its own, [lines.suction]"),
     ],
 )

@@ -274,6 +274,7 @@ def test_a_new_case_reads_with_the_other_ways_taken_in(tmp_path):
         "#| return_gas",
         "# outlet",
         "# remaining_life",
+        "# mounting = ",
     )
     for other in without:
         text = text.replace(f"\n{other}", f"\n# without {other}")
@@ -286,6 +287,7 @@ def test_a_new_case_reads_with_the_other_ways_taken_in(tmp_path):
     assert case.compressor.polynomial.capacity == tuple(range(1, 11))
     assert case.compressor.steps == 4
     assert case.evaporator.flow_kg_per_s == 8.0
+    assert (case.room.mounting, case.room.mounting_height_m) == (None, 2.5)
 
 
 def test_a_new_case_mentions_every_key():
