@@ -1,6 +1,35 @@
 """One case with all its candidates, solved once into one frozen result that everything else shows."""
 
 from retrofit.study.compare import compare
-from retrofit.study.result import ChartLines, Comparison, EnthalpyZero, Entry, Finding, Performance, Point
+from retrofit.study.result import (
+    Baseline,
+    ChartLines,
+    Comparison,
+    Component,
+    Derived,
+    EnthalpyZero,
+    Entry,
+    Finding,
+    Installed,
+    Measure,
+    Operation,
+    Performance,
+    Point,
+)
 
-__all__ = ["ChartLines", "Comparison", "EnthalpyZero", "Entry", "Finding", "Performance", "Point", "compare"]
+__all__ = [
+    "Baseline",
+    "ChartLines",
+    "Comparison",
+    "Component",
+    "Derived",
+    "EnthalpyZero",
+    "Entry",
+    "Finding",
+    "Installed",
+    "Measure",
+    "Operation",
+    "Performance",
+    "Point",
+    "compare",
+]

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import fields, replace
+from dataclasses import dataclass, fields, replace
 from importlib.metadata import version
 
 import numpy as np
@@ -16,14 +16,24 @@ from retrofit.cycle import (
     Temperatures,
     cycle_temperatures,
     matched_pressures,
-    solve_cycle,
     state_points,
 )
-from retrofit.errors import OutsideValidRangeError, RetrofitError
+from retrofit.errors import NoSolutionError, OutsideValidRangeError, RetrofitError
 from retrofit.properties import Fluid, fluid, grade
 from retrofit.refrigerants import Refrigerant, cautions_for, change_cautions, find
+from retrofit.study.baseline import baseline, case_with_readings
+from retrofit.study.hardware import run as hardware
+from retrofit.study.hardware.conditions import Site, cycle_between
+from retrofit.study.installed import (
+    EfficiencyModel,
+    ExistingPlant,
+    efficiency_model,
+    existing_plant,
+    run_installed,
+)
 from retrofit.study.lines import chart_lines
-from retrofit.study.result import Comparison, Entry, FloatArray, Performance, Point
+from retrofit.study.performance import as_numbers, at_swept_volume, performance
+from retrofit.study.result import Baseline, Comparison, Entry, Installed, Point
 
 KELVIN = 273.15
 # Ratios to the existing refrigerant: name, basis, quantity of the performance.
@@ -45,6 +55,24 @@ RATIOS = (
 OnBuild = Callable[[str], None]
 
 
+@dataclass(frozen=True)
+class _Today:
+    """What every refrigerant is compared with and matched to, once the existing one is solved."""
+
+    case: Case
+    settings: Settings
+    model: EfficiencyModel
+    targets: Temperatures
+    swept_volume_m3_per_s: float
+    plant: ExistingPlant | None
+    plant_reason: str | None
+
+    @property
+    def site(self) -> Site:
+        """Return what the hardware is reckoned with."""
+        return Site(self.case, self.settings, self.model, self.targets, self.swept_volume_m3_per_s, self.plant)
+
+
 def compare(case: Case, on_build: OnBuild | None = None) -> Comparison:
     """Compare the candidates of a case with its existing refrigerant.
 
@@ -53,89 +81,68 @@ def compare(case: Case, on_build: OnBuild | None = None) -> Comparison:
         on_build: Called with a designation before its tables are built, which takes a second or so.
     Returns: The comparison; a refrigerant that cannot be computed is an entry with its reason.
     """
-    settings = _settings(case)
-    targets, existing = _existing(case, settings, on_build)
-    swept, swept_from = _swept_volume(case, existing)
-    existing = _with_compressor(existing, swept)
-    existing = _against(existing, existing)
-    candidates = []
-    for name in case.compare.candidates:
-        entry = _candidate(case, settings, targets, find(name), existing, on_build)
-        candidates.append(_against(_with_compressor(entry, swept), existing))
+    refrigerant = find(case.plant.refrigerant)
+    existing = Entry(refrigerant, "keep", "not computed", None, cautions_for(refrigerant))
+    found: Baseline | None = None
+    today: _Today | None = None
+    parts: hardware.Today | None = None
+    try:
+        behaviour = fluid(refrigerant.designation, on_build)
+        found = baseline(case, behaviour)
+        case = case_with_readings(case, found)
+        today = _today(case, behaviour)
+        existing = _solved(today, existing, behaviour)
+        parts = hardware.today_of(today.site, behaviour, existing)
+        existing = _against(existing, existing, parts, behaviour)
+    except RetrofitError as error:
+        existing = replace(existing, reason=error.message)
+    candidates = [_candidate(today, parts, find(name), existing, on_build) for name in case.compare.candidates]
     return Comparison(
         case=case,
         existing=existing,
         candidates=tuple(candidates),
-        swept_volume_m3_per_s=swept,
-        swept_volume_from=swept_from,
+        swept_volume_m3_per_s=today.swept_volume_m3_per_s if today else case.compressor.swept_volume_m3_per_s,
+        swept_volume_from="duty" if case.compressor.swept_volume_m3_per_s is None else "case",
         versions={"retrofit": retrofit.__version__, "coolprop": version("CoolProp")},
+        baseline=found,
     )
 
 
-def performance(cycle: Cycle, cooling_W: FloatArray | float) -> Performance[FloatArray]:
-    """Return what a plant does that delivers a cooling with a cycle.
+def _today(case: Case, existing: Fluid) -> _Today:
+    """Solve the existing refrigerant from its reading: targets, swept volume and the plant as installed."""
+    _check_subcooling(case)
+    settings, model = _settings(case), efficiency_model(case, existing)
+    reading = Temperatures(case.duty.T_evap_K, case.duty.T_cond_K, case.duty.reading)
+    targets = cycle_temperatures(_cycle(existing, reading, settings, model), case.compare.match)
+    # From here on the existing refrigerant goes the way of every other, so that against itself nothing changes.
+    cycle = _cycle(existing, targets, settings, model)
+    given = case.compressor.swept_volume_m3_per_s
+    swept = given or float(performance(cycle, case.duty.cooling_W).swept_volume_m3_per_s)
+    plant, reason = None, None
+    try:
+        plant = existing_plant(case, existing, cycle, model, swept)
+    except NoSolutionError as error:
+        reason = error.message
+    return _Today(case, settings, model, targets, swept, plant, reason)
 
-    Args:
-        cycle: The cycle, or an array of them.
-        cooling_W: Cooling delivered; broadcasts with the cycle. [W]
-    Returns: The performance, as arrays.
-    Source: mass flow = cooling / refrigerating effect; everything else follows from the cycle.
-    """
-    mass_flow = np.asarray(cooling_W) / cycle.refrigerating_effect_J_per_kg
-    volume_flow = mass_flow / cycle.density_suction_kg_per_m3
-    mean = cycle_temperatures(cycle, "mean")
-    return Performance(
-        cooling_W=mass_flow * cycle.refrigerating_effect_J_per_kg,
-        p_evap_Pa=cycle.p_evap_Pa,
-        p_cond_Pa=cycle.p_cond_Pa,
-        pressure_ratio=cycle.pressure_ratio,
-        T_evap_dew_K=cycle.T_evap_dew_K,
-        T_evap_inlet_K=cycle.T_evap_inlet_K,
-        T_evap_mean_K=np.asarray(mean.T_evap_K),
-        T_cond_dew_K=cycle.T_cond_dew_K,
-        T_cond_bubble_K=cycle.T_cond_bubble_K,
-        T_cond_mean_K=np.asarray(mean.T_cond_K),
-        glide_evap_K=cycle.T_evap_dew_K - cycle.T_evap_inlet_K,
-        glide_cond_K=cycle.T_cond_dew_K - cycle.T_cond_bubble_K,
-        T_suction_K=cycle.T_suction_K,
-        T_discharge_K=cycle.T_discharge_K,
-        T_discharge_isentropic_K=cycle.T_discharge_isentropic_K,
-        cop=cycle.cop,
-        volumetric_capacity_J_per_m3=cycle.volumetric_capacity_J_per_m3,
-        refrigerating_effect_J_per_kg=cycle.refrigerating_effect_J_per_kg,
-        mass_flow_kg_per_s=mass_flow,
-        suction_volume_flow_m3_per_s=volume_flow,
-        swept_volume_m3_per_s=volume_flow / np.asarray(cycle.settings.volumetric_efficiency),
-        power_W=mass_flow * cycle.work_J_per_kg,
-        heat_rejected_W=mass_flow * cycle.heat_rejected_J_per_kg,
-        line_heat_W=mass_flow * cycle.line_heat_J_per_kg,
-    )
+
+def _cycle(behaviour: Fluid, temperatures: Temperatures, settings: Settings, model: EfficiencyModel) -> Cycle:
+    """Solve the cycle of a refrigerant at temperatures, with the compressor's efficiencies at its own pressures."""
+    p_evap, p_cond = matched_pressures(behaviour, temperatures, settings.subcooling_K)
+    return cycle_between(behaviour, p_evap, p_cond, settings, model)
 
 
 def _settings(case: Case) -> Settings:
-    duty, compressor = case.duty, case.compressor
+    """Return what the case holds equal for every refrigerant; efficiencies follow from each one's pressures."""
+    duty, evaporator, condenser = case.duty, case.evaporator, case.condenser
     return Settings(
         useful_superheat_K=duty.useful_superheat_K,
         line_superheat_K=duty.line_superheat_K,
         subcooling_K=duty.subcooling_K,
-        isentropic_efficiency=compressor.isentropic_efficiency,
-        volumetric_efficiency=compressor.volumetric_efficiency,
+        heat_loss_share=case.compressor.heat_loss or 0.0,
+        suction_drop_K=evaporator.pressure_drop_K if evaporator else 0.0,
+        discharge_drop_K=condenser.pressure_drop_K if condenser else 0.0,
     )
-
-
-def _existing(case: Case, settings: Settings, on_build: OnBuild | None) -> tuple[Temperatures | None, Entry]:
-    """Solve the existing refrigerant from its reading, and return the temperatures candidates are matched to."""
-    refrigerant = find(case.plant.refrigerant)
-    entry = Entry(refrigerant, "keep", "not computed", None, cautions_for(refrigerant))
-    reading = Temperatures(case.duty.T_evap_K, case.duty.T_cond_K, case.duty.reading)
-    try:
-        _check_subcooling(case)
-        behaviour = fluid(refrigerant.designation, on_build)
-        pressures = matched_pressures(behaviour, reading, settings.subcooling_K)
-        targets = cycle_temperatures(solve_cycle(behaviour, *pressures, settings), case.compare.match)
-        return targets, _solved(case, settings, targets, entry, behaviour)
-    except RetrofitError as error:
-        return None, replace(entry, reason=error.message)
 
 
 def _check_subcooling(case: Case) -> None:
@@ -151,9 +158,8 @@ def _check_subcooling(case: Case) -> None:
 
 
 def _candidate(
-    case: Case,
-    settings: Settings,
-    targets: Temperatures | None,
+    today: _Today | None,
+    parts: hardware.Today | None,
     refrigerant: Refrigerant,
     existing: Entry,
     on_build: OnBuild | None,
@@ -162,31 +168,38 @@ def _candidate(
     is_step_known = existing.refrigerant.safety_class.text and refrigerant.safety_class.text
     family = "replace" if changes and is_step_known else "convert"
     entry = Entry(refrigerant, family, "not computed", None, (*changes, *cautions_for(refrigerant)))
-    if targets is None:
+    if today is None or parts is None:
         name = existing.refrigerant.designation
         return replace(entry, reason=f"{name}, the existing refrigerant it would be matched to, is not computed")
     try:
-        return _solved(case, settings, targets, entry, fluid(refrigerant.designation, on_build))
+        behaviour = fluid(refrigerant.designation, on_build)
+        return _against(_solved(today, entry, behaviour), existing, parts, behaviour)
     except RetrofitError as error:
         return replace(entry, reason=error.message)
 
 
-def _solved(case: Case, settings: Settings, targets: Temperatures, entry: Entry, behaviour: Fluid) -> Entry:
-    pressures = matched_pressures(behaviour, targets, settings.subcooling_K)
-    cycle = solve_cycle(behaviour, *pressures, settings)
+def _solved(today: _Today, entry: Entry, behaviour: Fluid) -> Entry:
+    """Solve a refrigerant on every basis; a plant that does not balance leaves the other bases standing."""
+    cycle = _cycle(behaviour, today.targets, today.settings, today.model)
+    duty = as_numbers(performance(cycle, today.case.duty.cooling_W))
+    installed, reason = None, today.plant_reason
+    if today.plant is not None:
+        try:
+            installed = run_installed(today.plant, behaviour)
+        except NoSolutionError as error:
+            reason = error.message
     return replace(
         entry,
         status="ok",
         grade=grade(behaviour, entry.refrigerant),
-        duty=_numbers(performance(cycle, case.duty.cooling_W)),
+        duty=duty,
+        compressor=at_swept_volume(duty, today.swept_volume_m3_per_s),
+        plant=installed,
+        plant_reason=reason,
         points=tuple(_point(state) for state in state_points(behaviour, cycle)),
         lines=chart_lines(behaviour),
         T_limit_K=behaviour.T_limit_K,
     )
-
-
-def _numbers(found: Performance[FloatArray]) -> Performance[float]:
-    return Performance(**{item.name: float(getattr(found, item.name)) for item in fields(Performance)})
 
 
 def _point(state: object) -> Point:
@@ -197,38 +210,31 @@ def _point(state: object) -> Point:
     return Point(name=values["name"], **numbers)
 
 
-def _swept_volume(case: Case, existing: Entry) -> tuple[float | None, str]:
-    """Return the swept volume of the existing compressors: as given, else what today's duty needs."""
-    if case.compressor.swept_volume_m3_per_s is not None:
-        return case.compressor.swept_volume_m3_per_s, "case"
-    return (existing.duty.swept_volume_m3_per_s if existing.duty else None), "duty"
-
-
-def _with_compressor(entry: Entry, swept_m3_per_s: float | None) -> Entry:
-    """Add the basis `compressor`: everything that scales with flow, scaled to the swept volume."""
-    if entry.duty is None or swept_m3_per_s is None:
-        return entry
-    scale = swept_m3_per_s / entry.duty.swept_volume_m3_per_s
-    flows = (
-        "cooling_W",
-        "mass_flow_kg_per_s",
-        "suction_volume_flow_m3_per_s",
-        "swept_volume_m3_per_s",
-        "power_W",
-        "heat_rejected_W",
-        "line_heat_W",
-    )
-    scaled = {name: getattr(entry.duty, name) * scale for name in flows}
-    return replace(entry, compressor=replace(entry.duty, **scaled))
-
-
-def _against(entry: Entry, existing: Entry) -> Entry:
-    """Add the ratios to the existing refrigerant."""
+def _against(entry: Entry, existing: Entry, parts: hardware.Today, behaviour: Fluid) -> Entry:
+    """Add the ratios to the existing refrigerant, and what the hardware sees with both."""
     if entry.duty is None or existing.duty is None:
         return entry
     ratios = {
         name: getattr(getattr(entry, basis), quantity) / getattr(getattr(existing, basis), quantity)
         for name, basis, quantity in RATIOS
     }
+    if entry.plant and existing.plant:
+        ratios |= _plant_ratios(entry.plant, existing.plant)
     difference = entry.duty.T_discharge_K - existing.duty.T_discharge_K
-    return replace(entry, relative=ratios, T_discharge_difference_K=difference)
+    return replace(
+        entry,
+        relative=ratios,
+        T_discharge_difference_K=difference,
+        hardware_numbers=hardware.hardware_numbers(parts, behaviour, entry),
+    )
+
+
+def _plant_ratios(new: Installed, today: Installed) -> dict[str, float]:
+    return {
+        "plant_capacity": new.full.cooling_W / today.full.cooling_W,
+        "plant_power": new.full.power_W / today.full.power_W,
+        "plant_heat_rejected": new.full.heat_rejected_W / today.full.heat_rejected_W,
+        "plant_cop": new.full.cop / today.full.cop,
+        "plant_cop_same_cooling": new.same_cooling.cop / today.same_cooling.cop,
+        "plant_mean_power": new.operation.mean_power_W / today.operation.mean_power_W,
+    }

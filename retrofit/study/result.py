@@ -12,6 +12,7 @@ from numpy.typing import NDArray
 from retrofit.case import Case
 from retrofit.properties import Grade
 from retrofit.refrigerants import Caution, Refrigerant
+from retrofit.study.hardware.numbers import HardwareNumbers
 
 FloatArray = NDArray[np.float64]
 Number = TypeVar("Number", float, FloatArray)
@@ -65,6 +66,153 @@ class Performance(Generic[Number]):
 
 
 @dataclass(frozen=True)
+class Operation:
+    """How the plant as installed meets the cooling it has to deliver.
+
+    Attributes:
+        control: "fixed", "steps" or "variable".
+        cooling_needed_W: Cooling to deliver.
+        unmet_W: Cooling it lacks though it runs all the time.
+        run_time_fraction, speed_fraction: Share of the time it runs, and speed while it runs.
+        mean_power_W: Compressor power, mean over the time.
+    """
+
+    control: str
+    cooling_needed_W: float
+    unmet_W: float
+    run_time_fraction: float
+    speed_fraction: float
+    mean_power_W: float
+
+
+@dataclass(frozen=True)
+class Installed:
+    """What the existing compressor and exchangers do with a refrigerant at the same air, water or brine.
+
+    Attributes:
+        full: Running at full, pressures where they settle.
+        same_cooling: Delivering today's cooling with whatever displacement that takes: what a COP may be
+            compared at, since a plant that cools less loads its exchangers less.
+        operation: How the plant meets the cooling it has to deliver.
+        is_covered: Whether the compressor's data reach to this point.
+        film_factors: Factors on the conductance of evaporator and condenser.
+        cooling_with_equal_films_W: Cooling at full with both factors 1: what the factors do.
+        conductances_W_per_K: Conductance of evaporator and condenser.
+        residual: Largest relative error of the balance.
+    """
+
+    full: Performance[float]
+    same_cooling: Performance[float]
+    operation: Operation
+    is_covered: bool
+    film_factors: tuple[float, float]
+    cooling_with_equal_films_W: float
+    conductances_W_per_K: tuple[float, float]
+    residual: float
+
+
+@dataclass(frozen=True)
+class Finding:
+    """Something a check found.
+
+    Attributes:
+        code: Short name, the same everywhere.
+        level: "stop", "work", "note" or "unknown".
+        title: What it is about, the same for every refrigerant it is found in.
+        fact: The number of this refrigerant against the threshold.
+        advice: What follows and what to do, the same for every refrigerant; may be empty.
+        source: Where the threshold comes from.
+    """
+
+    code: str
+    level: str
+    title: str
+    fact: str
+    advice: str
+    source: str
+
+    @property
+    def text(self) -> str:
+        """Return fact and advice as one text."""
+        return f"{self.fact} {self.advice}".strip()
+
+
+@dataclass(frozen=True)
+class Measure:
+    """One number of a component, today and with a candidate.
+
+    Attributes:
+        name: What it is.
+        kind: Its kind of quantity, as the unit systems name it.
+        old, new: Today and with the candidate, in SI; None if not known.
+    """
+
+    name: str
+    kind: str
+    old: float | None
+    new: float | None
+
+
+@dataclass(frozen=True)
+class Component:
+    """One row of the hardware table: a component of the plant and what a candidate means for it.
+
+    Attributes:
+        code: Short name, the same everywhere.
+        name: The component, for a reader.
+        verdict: "keep", "adjust", "replace" or "unknown".
+        measures: The numbers it rests on.
+        reason: Why, in one sentence with the deciding number; for "unknown" what is missing.
+        threshold: The threshold in words, with its value.
+        source: Where the threshold comes from.
+        ask: What to ask the maker or to look up; may be empty.
+    """
+
+    code: str
+    name: str
+    verdict: str
+    measures: tuple[Measure, ...]
+    reason: str
+    threshold: str
+    source: str
+    ask: str
+
+
+@dataclass(frozen=True)
+class Derived:
+    """One quantity derived from readings on the running plant.
+
+    Attributes:
+        code: Short name, the same everywhere.
+        name: What it is, for a reader.
+        kind: Its kind of quantity, as the unit systems name it.
+        value: In SI.
+        made_from: From which readings and values of the case it was made, in words.
+    """
+
+    code: str
+    name: str
+    kind: str
+    value: float
+    made_from: str
+
+
+@dataclass(frozen=True)
+class Baseline:
+    """How the plant runs today, from readings.
+
+    Attributes:
+        derived: Quantities derived from the readings.
+        problems: What is wrong or does not fit together in the readings; never silently used.
+        missing: What could not be derived, and which reading it would need.
+    """
+
+    derived: tuple[Derived, ...]
+    problems: tuple[Finding, ...]
+    missing: tuple[str, ...]
+
+
+@dataclass(frozen=True)
 class Point:
     """One named state of a cycle; `quality` is the vapour mass fraction, None outside the two-phase region."""
 
@@ -114,32 +262,6 @@ class ChartLines:
 
 
 @dataclass(frozen=True)
-class Finding:
-    """Something a check found.
-
-    Attributes:
-        code: Short name, the same everywhere.
-        level: "stop", "work", "note" or "unknown".
-        title: What it is about, the same for every refrigerant it is found in.
-        fact: The number of this refrigerant against the threshold.
-        advice: What follows and what to do, the same for every refrigerant; may be empty.
-        source: Where the threshold comes from.
-    """
-
-    code: str
-    level: str
-    title: str
-    fact: str
-    advice: str
-    source: str
-
-    @property
-    def text(self) -> str:
-        """Return fact and advice as one text."""
-        return f"{self.fact} {self.advice}".strip()
-
-
-@dataclass(frozen=True)
 class Entry:
     """One refrigerant of a study: the existing one or a candidate.
 
@@ -150,13 +272,15 @@ class Entry:
         grade: How far its model can be trusted, None without a model.
         duty: Same duty: displacement, mass flow and power follow.
         compressor: Same compressor: capacity and power follow.
+        plant: Same plant, None with `plant_reason` if the case does not describe it or it does not balance.
         points: State points of the cycle, beginning at the compressor inlet.
         lines: Lines for its pressure-enthalpy chart.
         relative: Ratios to the existing refrigerant.
         T_discharge_difference_K: Discharge temperature against the existing refrigerant.
         T_limit_K: Up to where the components' equations of state are stated to hold.
+        hardware_numbers: What the components of the plant see with it, beside today's; None if not computed.
         cautions: From its safety class; always there.
-        findings, verdict: What the checks say; empty until they have run.
+        findings, hardware, verdict: What the checks say; empty until they have run.
     """
 
     refrigerant: Refrigerant
@@ -167,12 +291,16 @@ class Entry:
     grade: Grade | None = None
     duty: Performance[float] | None = None
     compressor: Performance[float] | None = None
+    plant: Installed | None = None
+    plant_reason: str | None = None
     points: tuple[Point, ...] = ()
     lines: ChartLines | None = None
     relative: Mapping[str, float] = field(default_factory=dict)
     T_discharge_difference_K: float | None = None
     T_limit_K: float | None = None
+    hardware_numbers: HardwareNumbers | None = None
     findings: tuple[Finding, ...] = ()
+    hardware: tuple[Component, ...] = ()
     verdict: str = ""
 
 
@@ -187,6 +315,7 @@ class Comparison:
         swept_volume_m3_per_s: Swept volume of the basis `compressor`, None if nothing could be computed.
         swept_volume_from: "case", or "duty" if the case does not give it and today's duty set it.
         versions: Versions the numbers depend on, by name.
+        baseline: How the plant runs today, None if the case has no readings.
     """
 
     case: Case
@@ -195,6 +324,7 @@ class Comparison:
     swept_volume_m3_per_s: float | None
     swept_volume_from: str
     versions: Mapping[str, str]
+    baseline: Baseline | None = None
 
     @property
     def entries(self) -> tuple[Entry, ...]:

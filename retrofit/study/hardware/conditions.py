@@ -1,0 +1,151 @@
+"""The conditions that decide on hardware: the design point, the hottest day, pull-down and standstill."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, replace
+
+import numpy as np
+from numpy.typing import ArrayLike
+
+from retrofit.case import Case
+from retrofit.cycle import Cycle, Settings, Temperatures, matched_pressures, solve_cycle
+from retrofit.equipment.vessels import standstill
+from retrofit.errors import NoSolutionError, OutsideValidRangeError
+from retrofit.properties import Fluid
+from retrofit.study.installed import EfficiencyModel, ExistingPlant, run_at_condenser_inlet
+from retrofit.study.performance import as_numbers, at_swept_volume, performance
+from retrofit.study.result import Performance
+
+KELVIN = 273.15
+
+
+@dataclass(frozen=True)
+class Site:
+    """What the hardware of every refrigerant is reckoned with.
+
+    Attributes:
+        case: The case.
+        settings: Superheat, subcooling, drops and heat loss, equal for every refrigerant.
+        model: Efficiencies of the compressor.
+        targets: Temperatures that are held equal.
+        swept_volume_m3_per_s: Swept volume of the existing compressors.
+        plant: The plant as installed, None if the case does not describe it.
+    """
+
+    case: Case
+    settings: Settings
+    model: EfficiencyModel
+    targets: Temperatures
+    swept_volume_m3_per_s: float
+    plant: ExistingPlant | None
+
+
+@dataclass(frozen=True)
+class Found:
+    """A condition, or why it is not known."""
+
+    performance: Performance[float] | None
+    reason: str = ""
+
+
+def cycle_between(
+    behaviour: Fluid, p_evap_Pa: ArrayLike, p_cond_Pa: ArrayLike, settings: Settings, model: EfficiencyModel
+) -> Cycle:
+    """Return the cycle between two pressures, with the compressor's efficiencies at them.
+
+    Args:
+        behaviour: The refrigerant.
+        p_evap_Pa: Evaporating pressure. [Pa]
+        p_cond_Pa: Condensing pressure. [Pa]
+        settings: Superheat, subcooling, drops and heat loss; its efficiencies are not used.
+        model: Efficiencies of the compressor.
+    Raises: OutsideValidRangeError outside the range of the refrigerant's model.
+    """
+    plain = solve_cycle(behaviour, p_evap_Pa, p_cond_Pa, settings)
+    isentropic, volumetric = model.at(plain.pressure_ratio, plain.p_suction_Pa)
+    own = replace(settings, isentropic_efficiency=isentropic, volumetric_efficiency=volumetric)
+    return solve_cycle(behaviour, p_evap_Pa, p_cond_Pa, own)
+
+
+def hottest_day(site: Site, behaviour: Fluid, basis: str) -> Found:
+    """Return the plant on the hottest day: balanced there, or with condensing as much warmer as the air.
+
+    Args:
+        site: The plant and what is held equal.
+        behaviour: The refrigerant.
+        basis: "plant" or "compressor".
+    """
+    reason = _no_hottest_day(site.case)
+    if reason:
+        return Found(None, reason)
+    assert site.case.condenser
+    assert site.case.condenser.inlet_K
+    assert site.case.plant.highest_ambient_K
+    inlet_K = max(site.case.condenser.inlet_K, site.case.plant.highest_ambient_K)
+    try:
+        if basis == "plant" and site.plant is not None:
+            return Found(run_at_condenser_inlet(site.plant, behaviour, inlet_K))
+        return Found(_warmer_condensing(site, behaviour, inlet_K - site.case.condenser.inlet_K))
+    except (NoSolutionError, OutsideValidRangeError) as error:
+        return Found(None, f"with {inlet_K - KELVIN:.0f} °C at the condenser there is no solution: {error.message}")
+
+
+def _no_hottest_day(case: Case) -> str:
+    """Return which key the hottest day needs, or nothing."""
+    if case.plant.highest_ambient_K is None:
+        return "`highest_ambient` in [plant] is not given"
+    if case.condenser is None or case.condenser.inlet_K is None:
+        return "`inlet` in [condenser] is not given"
+    if case.condenser.medium is None:
+        return "`medium` in [condenser] is not given"
+    if case.condenser.medium != "air":
+        return f"the condenser is cooled by {case.condenser.medium}, whose highest temperature the case does not give"
+    return ""
+
+
+def _warmer_condensing(site: Site, behaviour: Fluid, by_K: float) -> Performance[float]:
+    """Return the plant at the temperatures held, condensing so much warmer."""
+    warmer = replace(site.targets, T_cond_K=np.asarray(site.targets.T_cond_K) + by_K)
+    p_evap, p_cond = matched_pressures(behaviour, warmer, site.settings.subcooling_K)
+    return _with_own_compressor(site, behaviour, float(p_evap), float(p_cond))
+
+
+def _with_own_compressor(site: Site, behaviour: Fluid, p_evap_Pa: float, p_cond_Pa: float) -> Performance[float]:
+    cycle = cycle_between(behaviour, p_evap_Pa, p_cond_Pa, site.settings, site.model)
+    return at_swept_volume(as_numbers(performance(cycle, 1.0)), site.swept_volume_m3_per_s)
+
+
+def pull_down(site: Site, behaviour: Fluid, design: Performance[float]) -> Found:
+    """Return the plant at the highest suction pressure, condensing as at the design point.
+
+    Args:
+        site: The plant and what is held equal.
+        behaviour: The refrigerant.
+        design: The plant at the design point.
+    """
+    T_K = site.case.compressor.highest_suction_K
+    if T_K is None:
+        return Found(None, "`highest_suction` in [compressor] is not given")
+    try:
+        return Found(_with_own_compressor(site, behaviour, float(behaviour.p_dew(T_K)), design.p_cond_Pa))
+    except OutsideValidRangeError as error:
+        return Found(None, f"pull-down is not computed: {error.message}")
+
+
+def standstill_pressure(case: Case, behaviour: Fluid) -> tuple[float | None, str]:
+    """Return the bubble pressure at the highest ambient temperature, or why it is not known. [Pa]
+
+    Args:
+        case: The case.
+        behaviour: The refrigerant.
+    """
+    T_K = case.plant.highest_ambient_K
+    if T_K is None:
+        return None, "`highest_ambient` in [plant] is not given"
+    rest = standstill(behaviour, T_K)
+    if np.isfinite(rest.p_Pa):
+        return float(rest.p_Pa), ""
+    where = f"{T_K - KELVIN:.0f} °C, against a critical temperature of {behaviour.T_critical_K - KELVIN:.0f} °C"
+    if rest.is_above_critical:
+        return None, f"no liquid at {where}: charge and volume set the pressure at rest"
+    return None, f"the model has no bubble pressure at {where}"

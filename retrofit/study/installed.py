@@ -1,0 +1,266 @@
+"""The plant as installed: compressor and exchangers taken from the case and from where the plant runs today."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, replace
+from typing import Protocol
+
+import numpy as np
+from numpy.typing import ArrayLike, NDArray
+
+from retrofit.case import Case
+from retrofit.case.compressor import Polynomial
+from retrofit.case.exchangers import Exchanger as ExchangerTable
+from retrofit.cycle import Cycle
+from retrofit.equipment.balance import (
+    Exchanger,
+    Machine,
+    balance,
+    condenser_difference,
+    evaporator_difference,
+)
+from retrofit.equipment.compressor import EfficiencyCurve, operation
+from retrofit.equipment.exchanger import Secondary
+from retrofit.equipment.polynomial import CompressorRating, efficiencies_of
+from retrofit.errors import NoSolutionError
+from retrofit.properties import Fluid
+from retrofit.study.performance import as_numbers, performance
+from retrofit.study.result import FloatArray, Installed, Operation, Performance
+
+Pair = tuple[FloatArray, FloatArray]
+
+
+class EfficiencyModel(Protocol):
+    """Isentropic and volumetric efficiency of the existing compressor, whatever they were described by."""
+
+    def at(self, pressure_ratio: ArrayLike, p_suction_Pa: ArrayLike | None = None) -> Pair:
+        """Return isentropic and volumetric efficiency. [-]"""
+        ...
+
+    def covers(self, pressure_ratio: ArrayLike, p_suction_Pa: ArrayLike | None = None) -> NDArray[np.bool_]:
+        """Return where the data reach."""
+        ...
+
+
+def efficiency_model(case: Case, existing: Fluid) -> EfficiencyModel:
+    """Return the efficiencies of the existing compressor from the case: constants, points or a polynomial.
+
+    Args:
+        case: The case.
+        existing: The refrigerant in the plant, that a polynomial is for.
+    Raises: QuantityError if points or coefficients are impossible; NoSolutionError if a polynomial comes
+        without a swept volume.
+    """
+    compressor = case.compressor
+    if compressor.polynomial is not None:
+        if compressor.swept_volume_m3_per_s is None:
+            raise NoSolutionError(
+                "a compressor's polynomial says nothing on volumetric efficiency without its swept volume; give "
+                "`swept_volume` in [compressor]"
+            )
+        return efficiencies_of(_rating(compressor.polynomial), existing, compressor.swept_volume_m3_per_s)
+    if compressor.efficiency_points is not None:
+        return EfficiencyCurve.through([tuple(point) for point in compressor.efficiency_points])
+    return EfficiencyCurve.constant(compressor.isentropic_efficiency, compressor.volumetric_efficiency)
+
+
+def _rating(table: Polynomial) -> CompressorRating:
+    return CompressorRating(
+        units=table.units,
+        T_evap_range_K=(table.T_evap_range_K[0], table.T_evap_range_K[1]),
+        T_cond_range_K=(table.T_cond_range_K[0], table.T_cond_range_K[1]),
+        capacity=table.capacity,
+        mass_flow=table.mass_flow,
+        power=table.power,
+        current=table.current,
+        superheat_K=table.superheat_K,
+        return_gas_K=table.return_gas_K,
+        subcooling_K=table.subcooling_K or 0.0,
+        voltage_V=table.voltage_V,
+        phases=table.phases,
+        power_factor=table.power_factor,
+    )
+
+
+@dataclass(frozen=True)
+class ExistingPlant:
+    """The existing machine with the conductances that today's point gives it.
+
+    Attributes:
+        machine: The machine, with today's conductances.
+        needed_W: Cooling that the plant has to deliver.
+        start_K: Evaporating and condensing dew temperature of today's point, to start a solution from.
+    """
+
+    case: Case
+    machine: Machine
+    model: EfficiencyModel
+    needed_W: float
+    start_K: tuple[float, float]
+
+
+def existing_plant(
+    case: Case, existing: Fluid, cycle: Cycle, model: EfficiencyModel, swept_volume_m3_per_s: float
+) -> ExistingPlant:
+    """Return the plant as installed, its conductances from today's point.
+
+    The temperatures of the case are taken as those of the machine running at full; its cooling there is what
+    its swept volume gives.
+
+    Args:
+        case: The case.
+        existing: Refrigerant in the plant.
+        cycle: Its cycle at the temperatures of the case.
+        model: Efficiencies of the compressor.
+        swept_volume_m3_per_s: Swept volume of the existing compressors. [m3/s]
+    Raises: NoSolutionError if the case does not describe both exchangers, or temperatures cross in one.
+    """
+    _, volumetric = model.at(cycle.pressure_ratio, cycle.p_suction_Pa)
+    mass_flow = swept_volume_m3_per_s * volumetric * cycle.density_suction_kg_per_m3
+    cooling = mass_flow * cycle.refrigerating_effect_J_per_kg
+    heat = mass_flow * cycle.heat_rejected_J_per_kg
+    evaporator = _exchanger("evaporator", case.evaporator, cooling)
+    condenser = _exchanger("condenser", case.condenser, -heat)
+    differences = {
+        "evaporator": float(evaporator_difference(existing, cycle, cooling, evaporator)),
+        "condenser": float(condenser_difference(existing, cycle, heat, condenser)),
+    }
+    for name, difference in differences.items():
+        if difference <= 0.0:
+            raise NoSolutionError(
+                f"at today's point the temperatures of refrigerant and medium cross in the {name}: check its inlet, "
+                "outlet and flow against the evaporating and condensing temperature"
+            )
+    machine = Machine(
+        swept_volume_m3_per_s=swept_volume_m3_per_s,
+        efficiencies=lambda ratio, p: model.at(ratio, p),
+        evaporator=replace(evaporator, conductance_W_per_K=float(cooling) / differences["evaporator"]),
+        condenser=replace(condenser, conductance_W_per_K=float(heat) / differences["condenser"]),
+        settings=cycle.settings,
+    )
+    start = float(cycle.T_evap_dew_K), float(cycle.T_cond_dew_K)
+    return ExistingPlant(case, machine, model, min(case.duty.cooling_W, float(cooling)), start)
+
+
+def _exchanger(name: str, table: ExchangerTable | None, heat_W: FloatArray) -> Exchanger:
+    """Return an exchanger with what the case says of it; its conductance is still to be found."""
+    if table is None or table.inlet_K is None or table.arrangement is None:
+        raise NoSolutionError(f"[{name}] with inlet, outlet (or flow) and arrangement is not given in the case")
+    if table.outlet_K is not None:
+        rate = abs(float(heat_W) / (table.inlet_K - table.outlet_K))
+    elif table.flow_kg_per_s is not None and table.specific_heat_J_per_kgK is not None:
+        rate = table.flow_kg_per_s * table.specific_heat_J_per_kgK
+    else:
+        raise NoSolutionError(f"[{name}] gives neither outlet nor flow with specific heat")
+    return Exchanger(1.0, Secondary(table.inlet_K, rate), table.arrangement)
+
+
+def run_installed(plant: ExistingPlant, behaviour: Fluid) -> Installed:
+    """Return what the existing plant does with a refrigerant.
+
+    Args:
+        plant: The plant as installed.
+        behaviour: The refrigerant.
+    Returns: Full speed, the same cooling, and how the plant meets its duty.
+    Raises: NoSolutionError with the reason if the plant does not balance.
+    """
+    factors = _film_factors(plant.case, behaviour.designation)
+    # At full with the films of the case; the same cooling; and at full with equal films, to show what they do.
+    machine = _with_films(plant.machine, np.array([[factors[0]] * 2 + [1.0], [factors[1]] * 2 + [1.0]]))
+    found = balance(behaviour, machine, *plant.start_K, np.array([np.nan, plant.needed_W, np.nan]))
+    for reason in found.reason[:2]:
+        if reason:
+            raise NoSolutionError(f"{behaviour.designation} in the plant as installed: {reason}")
+    cooling = found.mass_flow_kg_per_s * found.cycle.refrigerating_effect_J_per_kg
+    every = performance(found.cycle, cooling)
+    full, same = as_numbers(every, 0), as_numbers(every, 1)
+    is_covered = plant.model.covers(found.cycle.pressure_ratio, found.cycle.p_suction_Pa)
+    conductances = machine.evaporator.conductance_W_per_K, machine.condenser.conductance_W_per_K
+    return Installed(
+        full=full,
+        same_cooling=same,
+        operation=_operation(plant, behaviour, full, same, factors),
+        is_covered=bool(is_covered[0]),
+        film_factors=factors,
+        cooling_with_equal_films_W=float(cooling[2]),
+        conductances_W_per_K=(float(np.asarray(conductances[0])[0]), float(np.asarray(conductances[1])[0])),
+        residual=float(found.residual[:2].max()),
+    )
+
+
+def run_at_condenser_inlet(plant: ExistingPlant, behaviour: Fluid, T_in_K: float) -> Performance[float]:
+    """Return what the existing plant does at full with another temperature at the condenser's inlet.
+
+    Args:
+        plant: The plant as installed.
+        behaviour: The refrigerant.
+        T_in_K: Temperature of air, water or brine at the inlet of the condenser. [K]
+    Raises: NoSolutionError with the reason if the plant does not balance.
+    """
+    machine = _with_films(plant.machine, _film_factors(plant.case, behaviour.designation))
+    warmer = T_in_K - np.asarray(machine.condenser.secondary.T_in_K)
+    secondary = replace(machine.condenser.secondary, T_in_K=T_in_K)
+    machine = replace(machine, condenser=replace(machine.condenser, secondary=secondary))
+    found = balance(behaviour, machine, plant.start_K[0], plant.start_K[1] + warmer)
+    if not found.is_solved:
+        raise NoSolutionError(f"{behaviour.designation} in the plant as installed: {found.reason}")
+    return as_numbers(performance(found.cycle, found.mass_flow_kg_per_s * found.cycle.refrigerating_effect_J_per_kg))
+
+
+def _film_factors(case: Case, designation: str) -> tuple[float, float]:
+    """Return the factors on both conductances; today's refrigerant is the measure and has none."""
+    if designation == case.plant.refrigerant or case.evaporator is None or case.condenser is None:
+        return 1.0, 1.0
+    return case.evaporator.film_factor.of(designation), case.condenser.film_factor.of(designation)
+
+
+def _with_films(machine: Machine, factors: ArrayLike) -> Machine:
+    """Return the machine with its conductances times factors: evaporator first, condenser second."""
+    evaporator, condenser = (
+        replace(exchanger, conductance_W_per_K=np.asarray(exchanger.conductance_W_per_K) * factor)
+        for exchanger, factor in zip((machine.evaporator, machine.condenser), np.asarray(factors), strict=True)
+    )
+    return replace(machine, evaporator=evaporator, condenser=condenser)
+
+
+def _operation(
+    plant: ExistingPlant,
+    behaviour: Fluid,
+    full: Performance[float],
+    same: Performance[float],
+    factors: tuple[float, float],
+) -> Operation:
+    """Return how the machine meets the cooling needed: part of the time, at part speed, or not at all."""
+    compressor, needed = plant.case.compressor, plant.needed_W
+    kind = compressor.speed or "fixed"
+    share = min(1.0, needed / full.cooling_W)
+    if kind == "variable" and share < 1.0:
+        return _slowed(plant, behaviour, same, factors)
+    run_time, speed = operation(kind, compressor.steps or 1, compressor.lowest_speed or 1.0, share)
+    return Operation(
+        control=kind,
+        cooling_needed_W=needed,
+        unmet_W=max(0.0, needed - full.cooling_W),
+        run_time_fraction=float(run_time),
+        speed_fraction=float(speed),
+        mean_power_W=full.power_W * share,
+    )
+
+
+def _slowed(
+    plant: ExistingPlant, behaviour: Fluid, same: Performance[float], factors: tuple[float, float]
+) -> Operation:
+    """Return the operation at the speed that just delivers the cooling needed, with the exchangers less loaded."""
+    swept = float(np.asarray(plant.machine.swept_volume_m3_per_s))
+    speed = same.swept_volume_m3_per_s / swept
+    lowest = plant.case.compressor.lowest_speed or speed
+    if speed >= lowest:
+        return Operation("variable", plant.needed_W, 0.0, 1.0, speed, same.power_W)
+    slow = replace(_with_films(plant.machine, factors), swept_volume_m3_per_s=lowest * swept)
+    found = balance(behaviour, slow, *plant.start_K)
+    if not found.is_solved:
+        raise NoSolutionError(f"{behaviour.designation} in the plant as installed, at its lowest speed: {found.reason}")
+    cooling = found.mass_flow_kg_per_s * found.cycle.refrigerating_effect_J_per_kg
+    run_time = plant.needed_W / float(cooling)
+    power = float(found.mass_flow_kg_per_s * found.cycle.work_J_per_kg)
+    return Operation("variable", plant.needed_W, 0.0, run_time, lowest, power * run_time)
