@@ -3,9 +3,10 @@
 No check changes a number. A missing datum is a finding of level `unknown`, never a good one.
 """
 
-from retrofit.checks.answer import Answer, Matter, answer, not_checked
+from retrofit.checks.answer import Answer, Matter, answer
 from retrofit.checks.assess import LEVELS, VERDICTS, assess, verdict
-from retrofit.checks.thresholds import Band, Threshold, model_band, threshold
+from retrofit.checks.limits import not_checked
+from retrofit.checks.thresholds import Band, Threshold, model_band, threshold, thresholds_for
 
 __all__ = [
     "LEVELS",
@@ -19,5 +20,6 @@ __all__ = [
     "model_band",
     "not_checked",
     "threshold",
+    "thresholds_for",
     "verdict",
 ]

@@ -5,6 +5,8 @@ from __future__ import annotations
 from dataclasses import replace
 
 from retrofit.checks.gates import GATES
+from retrofit.checks.hardware import hardware_findings, hardware_rows
+from retrofit.checks.thresholds import thresholds_for
 from retrofit.study import Comparison, Entry, Finding
 
 LEVELS = ("stop", "unknown", "work", "note")
@@ -13,12 +15,14 @@ SUITS = "suits"
 
 
 def assess(comparison: Comparison) -> Comparison:
-    """Return the result with findings and a verdict for every refrigerant.
+    """Return the result with findings, the hardware table and a verdict for every refrigerant.
 
     Args:
         comparison: A result.
-    Returns: The same numbers, with findings (worst first) and verdicts.
+    Returns: The same numbers, with findings (worst first), hardware and verdicts.
+    Raises: CaseFileError if the case sets a threshold that there is not.
     """
+    thresholds_for(comparison.case)
     existing = _assessed(comparison, comparison.existing)
     candidates = tuple(_assessed(comparison, entry) for entry in comparison.candidates)
     return replace(comparison, existing=existing, candidates=candidates)
@@ -26,10 +30,12 @@ def assess(comparison: Comparison) -> Comparison:
 
 def _assessed(comparison: Comparison, entry: Entry) -> Entry:
     found = [finding for gate in GATES for finding in gate(comparison, entry)]
+    rows = hardware_rows(comparison, entry, found)
+    found += hardware_findings(rows, entry is comparison.existing)
     if entry.status != "ok":
         found.insert(0, _not_computed(entry))
     found.sort(key=lambda finding: LEVELS.index(finding.level))
-    return replace(entry, findings=tuple(found), verdict=verdict(found))
+    return replace(entry, findings=tuple(found), hardware=rows, verdict=verdict(found))
 
 
 def _not_computed(entry: Entry) -> Finding:

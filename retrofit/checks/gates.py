@@ -8,7 +8,17 @@ from __future__ import annotations
 
 from collections.abc import Callable, Iterator
 
-from retrofit.checks.thresholds import Threshold, model_band, threshold
+from retrofit.checks.operating import (
+    condenser,
+    discharge_temperature,
+    high_side,
+    limit_of,
+    motor,
+    near_critical,
+    pressure_ratio,
+    vacuum,
+)
+from retrofit.checks.thresholds import model_band
 from retrofit.refrigerants import parse_safety_class
 from retrofit.study import Comparison, Entry, Finding, Performance
 from retrofit.units import listed
@@ -70,7 +80,7 @@ def capacity(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
     """Compare the cooling with the existing compressor with the cooling needed."""
     if entry.compressor is None:
         return
-    limit, band = threshold("capacity"), model_band()["capacity"].value
+    limit, band = limit_of(comparison, "capacity"), model_band()["capacity"].value
     share = entry.compressor.cooling_W / capacity_needed_W(comparison)
     if entry is comparison.existing:
         yield from _today_against_duty(comparison, entry.compressor)
@@ -94,7 +104,7 @@ def _today_against_duty(comparison: Comparison, today: Performance[float]) -> It
     """Note where swept volume and duty of the case do not describe one plant: a slip in either shows here."""
     duty = comparison.case.duty.cooling_W
     share = today.cooling_W / duty
-    short, ample = threshold("displacement_short"), threshold("displacement_ample")
+    short, ample = limit_of(comparison, "displacement_short"), limit_of(comparison, "displacement_ample")
     level = short.level_below(share) or ample.level(share)
     if level is None:
         return
@@ -110,124 +120,12 @@ def _today_against_duty(comparison: Comparison, today: Performance[float]) -> It
     )
 
 
-def discharge_temperature(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
-    """Compare the discharge temperature with what oil and valves bear."""
-    if entry.duty is None:
-        return
-    limit, found = threshold("discharge_temperature"), entry.duty.T_discharge_K - KELVIN
-    level = limit.level(found)
-    if level is not None:
-        yield Finding(
-            "discharge-temperature",
-            level,
-            "Hot discharge",
-            f"{found:.0f} °C at the compressor outlet, against {_limits(limit, '°C')}.",
-            "Ask the maker; lower return-gas temperature, head cooling or liquid injection are the usual ways.",
-            limit.source,
-        )
-    if entry.T_limit_K is not None and entry.duty.T_discharge_K > entry.T_limit_K:
-        yield Finding(
-            "model-range",
-            "note",
-            "Discharge beyond the range of the equation of state",
-            f"{found:.0f} °C is above {entry.T_limit_K - KELVIN:.0f} °C, up to where the equation of state of every "
-            "component is stated to hold.",
-            "The discharge temperature is an extrapolation.",
-            "limits in the property library",
-        )
-
-
-def pressure_ratio(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
-    """Compare the pressure ratio with what one stage does."""
-    if entry.duty is None:
-        return
-    limit = threshold("pressure_ratio")
-    level = limit.level(entry.duty.pressure_ratio)
-    if level is not None:
-        yield Finding(
-            "pressure-ratio",
-            level,
-            "High pressure ratio",
-            f"{entry.duty.pressure_ratio:.1f} (absolute), against {_limits(limit, '')}.",
-            "Ask the maker for the envelope with this refrigerant.",
-            limit.source,
-        )
-
-
-def high_side(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
-    """Compare the condensing pressure with the nameplate of the high side."""
-    plant, limit = comparison.case.plant, threshold("high_side")
-    if entry.duty is None:
-        return
-    if plant.high_side_limit_Pa is None:
-        yield Finding(
-            "high-side",
-            "unknown",
-            "Nameplate pressure not given",
-            f"Condensing at {entry.duty.p_cond_Pa / 1e5:.1f} bar a cannot be compared with what the high side is built "
-            "for.",
-            "Give `high_side_limit` in [plant].",
-            limit.source,
-        )
-        return
-    # Nameplates and switches count from the air around them.
-    gauge = entry.duty.p_cond_Pa - plant.ambient_pressure_Pa
-    name_plate = plant.high_side_limit_Pa - plant.ambient_pressure_Pa
-    level = limit.level(gauge / name_plate)
-    if level is not None:
-        yield Finding(
-            "high-side",
-            level,
-            "Condensing pressure close to or above the nameplate",
-            f"{gauge / 1e5:.1f} bar g at the condensing temperature of the case, {gauge / name_plate:.0%} of the "
-            f"nameplate's {name_plate / 1e5:.1f} bar g, against {_limits(limit, 'of it')}.",
-            "A hotter day and standstill come on top; check switch, relief valve and vessel.",
-            limit.source,
-        )
-
-
-def near_critical(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
-    """Compare the condensing temperature with the critical one."""
-    if entry.duty is None or entry.lines is None:
-        return
-    limit = threshold("critical_distance")
-    distance = entry.lines.T_critical_K - entry.duty.T_cond_mean_K
-    level = limit.level_below(distance)
-    if level is not None:
-        yield Finding(
-            "near-critical",
-            level,
-            "Condensing near the critical temperature",
-            f"{distance:.0f} K below the critical temperature of {entry.lines.T_critical_K - KELVIN:.0f} °C, against "
-            f"{_limits(limit, 'K')}.",
-            "On a hotter day capacity and COP fall fast.",
-            limit.source,
-        )
-
-
-def vacuum(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
-    """Tell where the low side runs below the pressure of the air around it."""
-    if entry.duty is None:
-        return
-    ambient = comparison.case.plant.ambient_pressure_Pa
-    if entry.duty.p_evap_Pa < ambient:
-        yield Finding(
-            "vacuum",
-            "work",
-            "Low side below atmospheric pressure",
-            f"Evaporating at {entry.duty.p_evap_Pa / 1e5:.2f} bar a; the air at the plant has "
-            f"{ambient / 1e5:.2f} bar a.",
-            "Air and moisture are drawn in through any leak, and leaks cannot be found from outside.",
-            "physics",
-        )
-
-
 def glide(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
     """Set the glide against the way the evaporators are fed."""
     if entry.duty is None:
         return
     found, feed = entry.duty.glide_evap_K, comparison.case.plant.evaporator
-    flooded, high = threshold("glide_flooded"), threshold("glide")
+    flooded, high = limit_of(comparison, "glide_flooded"), limit_of(comparison, "glide")
     level = flooded.level(found)
     if level is not None and feed in ("flooded", "pumped"):
         yield Finding(
@@ -286,34 +184,6 @@ def oil(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
         )
 
 
-def compressor_load(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
-    """Compare power and heat rejected, same compressor, with today's."""
-    if entry is comparison.existing or not entry.relative:
-        return
-    motor, condenser = threshold("motor_power"), threshold("heat_rejected")
-    level = motor.level(entry.relative["power"])
-    if level is not None:
-        yield Finding(
-            "motor",
-            level,
-            "More compressor power",
-            f"{entry.relative['power']:.2f} times today's power with the same compressor.",
-            "Compare motor current with the plate, at this point and at pull-down.",
-            motor.source,
-        )
-    level = condenser.level(entry.relative["heat_rejected"])
-    if level is not None:
-        yield Finding(
-            "condenser",
-            level,
-            "More heat to reject",
-            f"{entry.relative['heat_rejected']:.2f} times today's heat with the same compressor, against "
-            f"{_limits(condenser, 'times')}.",
-            "The condensing temperature will rise unless the condenser has room.",
-            condenser.source,
-        )
-
-
 def model(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
     """Say where the model of a refrigerant is not good enough to decide on."""
     if entry.grade is None:
@@ -331,7 +201,7 @@ def model(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
 
 def ozone(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
     """Stop a candidate that depletes the ozone layer; note a potential smaller than that of any controlled one."""
-    depletion, limit = entry.refrigerant.odp, threshold("ozone")
+    depletion, limit = entry.refrigerant.odp, limit_of(comparison, "ozone")
     level = None if depletion.number is None else limit.level(depletion.number)
     if entry is comparison.existing or level is None:
         return
@@ -375,17 +245,9 @@ GATES: tuple[Gate, ...] = (
     capacity,
     glide,
     vacuum,
-    compressor_load,
+    motor,
+    condenser,
     oil,
     model,
     always_work,
 )
-
-
-def _limits(limit: Threshold, unit: str) -> str:
-    parts = [
-        f"{value:g} {unit}".strip() + f" ({word})"
-        for value, word in ((limit.work, "work"), (limit.stop, "stop"))
-        if value is not None
-    ]
-    return " and ".join(parts)

@@ -3,10 +3,18 @@
 from __future__ import annotations
 
 import tomllib
-from collections.abc import Mapping
+from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
 from functools import cache
 from importlib.resources import files
+
+from retrofit.case import Case
+from retrofit.case import Threshold as OwnThreshold
+from retrofit.case.source import parsed
+from retrofit.errors import CaseFileError, Problem
+from retrofit.units import close_to, listed, quoted
+
+LEVELS = ("note", "work", "stop")
 
 
 @dataclass(frozen=True)
@@ -15,7 +23,7 @@ class Threshold:
 
     Attributes:
         unit: What the figures count.
-        source, basis: Where they come from: "read", "practice" or "memory".
+        source, basis: Where they come from: "read", "practice", "memory", or "case" if the user set them.
         note, work, stop: Where a finding of that level begins; None if there is no such level.
     """
 
@@ -25,6 +33,29 @@ class Threshold:
     note: float | None = None
     work: float | None = None
     stop: float | None = None
+
+    @property
+    def figures(self) -> Mapping[str, float]:
+        """Return the figures by level, the mildest first."""
+        found = {level: getattr(self, level) for level in LEVELS}
+        return {level: figure for level, figure in found.items() if figure is not None}
+
+    def figures_in(self, unit: str) -> str:
+        """Return where work and a stop begin, such as "107 °C (work) and 121 °C (stop)".
+
+        Args:
+            unit: The unit as a sentence writes it.
+        """
+        parts = [f"{figure:g} {unit}".strip() + f" ({level})" for level, figure in self.figures.items()]
+        return " and ".join(part for part in parts if not part.endswith("(note)"))
+
+    def words(self, side: str = "above") -> str:
+        """Return the threshold in words, such as "work above 0.9, stop above 1 of the nameplate pressure".
+
+        Args:
+            side: "above" or "below", the side on which a value is bad.
+        """
+        return f"{', '.join(f'{level} {side} {figure:g}' for level, figure in self.figures.items())} {self.unit}"
 
     def level(self, value: float) -> str | None:
         """Return the level of a value that is worse the larger it is, None if it is below every level."""
@@ -62,6 +93,57 @@ def _table() -> Mapping[str, dict[str, object]]:
 def threshold(name: str) -> Threshold:
     """Return a threshold by its name in thresholds.toml."""
     return Threshold(**_table()[name])  # type: ignore[arg-type]
+
+
+def thresholds_for(case: Case) -> Mapping[str, Threshold]:
+    """Return every threshold by name, the user's own in the case laid over those of the file.
+
+    Args:
+        case: The case.
+    Raises: CaseFileError for a name or a level that there is not, or figures in the wrong order.
+    """
+    table = {name: threshold(name) for name in _table() if name != "band"}
+    own = case.thresholds.by_name if case.thresholds else {}
+    problems = [problem for name, figures in own.items() for problem in _problems(name, figures, table)]
+    if problems:
+        lines = parsed(case.text, case.path)[1]
+        located = [Problem(lines.get(("thresholds", name), 0), f"thresholds.{name}", text) for name, text in problems]
+        raise CaseFileError(case.path, located)
+    return {**table, **{name: _laid_over(table[name], figures) for name, figures in own.items()}}
+
+
+def _problems(name: str, own: OwnThreshold, table: Mapping[str, Threshold]) -> Iterator[tuple[str, str]]:
+    """Yield what is wrong with a threshold of the user's: its name, and what to do."""
+    if name not in table:
+        near = close_to(name, table) or "."
+        yield name, f"there is no threshold {quoted(name)}{near} The names are {listed(table, 'and')}"
+        return
+    known, given = table[name].figures, _given(own)
+    unknown = [level for level in given if level not in known]
+    if unknown:
+        yield name, f"it has no level {listed(unknown)}; its levels are {listed(known, 'and')}"
+        return
+    if not _in_order(known, {**known, **given}):
+        yield name, f"its figures run the other way than {table[name].words('beyond')}; give all levels in that order"
+
+
+def _given(own: OwnThreshold) -> Mapping[str, float]:
+    found = {level: getattr(own, level) for level in LEVELS}
+    return {level: figure for level, figure in found.items() if figure is not None}
+
+
+def _in_order(known: Mapping[str, float], laid_over: Mapping[str, float]) -> bool:
+    """Return whether figures run from level to level the same way as those of the file."""
+    file, own = list(known.values()), list(laid_over.values())
+    return own == sorted(own, reverse=file != sorted(file))
+
+
+def _laid_over(limit: Threshold, own: OwnThreshold) -> Threshold:
+    given = _given(own)
+    instead = ", ".join(f"{level} {limit.figures[level]:g}" for level in given)
+    source = f"set in the case, instead of {instead} ({limit.source})"
+    figures = {**limit.figures, **given}
+    return Threshold(limit.unit, source, "case", *(figures.get(level) for level in LEVELS))
 
 
 @cache

@@ -10,9 +10,28 @@ from typing import Any
 
 from retrofit.properties import Grade
 from retrofit.refrigerants import GWP_BASES, Refrigerant
-from retrofit.study import Comparison, Entry, Performance, Point
+from retrofit.study import Baseline, Comparison, Component, Entry, Finding, Installed, Performance, Point
 from retrofit.study.compare import RATIOS
 
+# Unit of the SI number of each kind of quantity that a component is measured by.
+UNITS = {
+    "pressure": "Pa",
+    "gauge pressure": "Pa above the air at the plant",
+    "pressure difference": "Pa",
+    "line pressure drop": "Pa",
+    "momentum flux": "Pa",
+    "temperature": "K",
+    "temperature difference": "K",
+    "cooling": "W",
+    "heat flow": "W",
+    "power": "W",
+    "current": "A",
+    "mass": "kg",
+    "diameter": "m",
+    "velocity": "m/s",
+    "ratio": "1",
+    "fraction": "1",
+}
 COMPARISON_SCHEMA = "retrofit.comparison/1"
 
 
@@ -37,7 +56,22 @@ def comparison_json(comparison: Comparison) -> dict[str, Any]:
         "existing": _entry(comparison.existing),
         "candidates": [_entry(entry) for entry in comparison.candidates],
         "defaults": [asdict(default) for default in case.defaults],
+        "baseline": _baseline(comparison.baseline),
     }
+
+
+def _baseline(found: Baseline | None) -> dict[str, Any] | None:
+    if found is None:
+        return None
+    return {
+        "derived": [asdict(item) for item in found.derived],
+        "problems": [_finding(finding) for finding in found.problems],
+        "missing": list(found.missing),
+    }
+
+
+def _finding(finding: Finding) -> dict[str, Any]:
+    return asdict(finding) | {"text": finding.text}
 
 
 def _entry(entry: Entry) -> dict[str, Any]:
@@ -51,13 +85,34 @@ def _entry(entry: Entry) -> dict[str, Any]:
         "model": _grade(entry.grade),
         "duty": _performance(entry.duty, entry.points),
         "compressor": _performance(entry.compressor, entry.points),
-        "plant": None,
+        "plant": _plant(entry.plant),
+        "plant_reason": entry.plant_reason,
         "relative": dict(entry.relative) or None,
         "T_discharge_difference_K": entry.T_discharge_difference_K,
         "verdict": entry.verdict,
-        "findings": [asdict(finding) | {"text": finding.text} for finding in entry.findings],
+        "hardware": [_component(component) for component in entry.hardware],
+        "findings": [_finding(finding) for finding in entry.findings],
         "cautions": [asdict(caution) for caution in entry.cautions],
     }
+
+
+def _plant(found: Installed | None) -> dict[str, Any] | None:
+    if found is None:
+        return None
+    return asdict(found.full) | {
+        "same_cooling": asdict(found.same_cooling),
+        "operation": asdict(found.operation),
+        "is_covered": found.is_covered,
+        "film_factors": list(found.film_factors),
+        "cooling_with_equal_films_W": found.cooling_with_equal_films_W,
+        "conductances_W_per_K": list(found.conductances_W_per_K),
+        "reason": None,
+    }
+
+
+def _component(component: Component) -> dict[str, Any]:
+    measures = [asdict(measure) | {"unit": UNITS[measure.kind]} for measure in component.measures]
+    return asdict(component) | {"measures": measures}
 
 
 def gwp_values(refrigerant: Refrigerant) -> dict[str, float | None]:

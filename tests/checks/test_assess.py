@@ -49,16 +49,18 @@ def test_levels_and_verdicts_are_one_order():
 
 
 def test_assessing_changes_no_number_and_sorts_the_worst_first(case_of):
-    """Only findings and verdict are added, and twice is the same as once."""
+    """Only findings, hardware and verdict are added, and twice is the same as once."""
     before = compare(case_of("R404A", ["R448A", "R290", "R744"]))
     after = assess(before)
 
-    assert [replace(entry, findings=(), verdict="") for entry in after.entries] == list(before.entries)
+    assert [replace(entry, findings=(), hardware=(), verdict="") for entry in after.entries] == list(before.entries)
     for entry in after.entries:
         ranks = [LEVELS.index(finding.level) for finding in entry.findings]
 
         assert ranks == sorted(ranks)
-    assert [entry.findings for entry in assess(after).entries] == [entry.findings for entry in after.entries]
+    again = assess(after)
+    assert [entry.findings for entry in again.entries] == [entry.findings for entry in after.entries]
+    assert [entry.hardware for entry in again.entries] == [entry.hardware for entry in after.entries]
 
 
 def test_a_refrigerant_that_is_not_computed_cannot_be_judged(case_of):

@@ -1,0 +1,176 @@
+"""Rows on pressure: nameplates, high-pressure switch, relief valve, standstill, vacuum, the critical point."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+from retrofit.checks.corners import worst
+from retrofit.checks.hardware.rows import Bound, Matter, View, judged, performance_measure, stated
+from retrofit.study import Component, Measure
+from retrofit.study.hardware.numbers import OldNew
+
+
+def _bar(p_Pa: float) -> str:
+    return f"{p_Pa / 1e5:.1f} bar g"
+
+
+def _condensing(view: View) -> tuple[Measure, Measure]:
+    return (
+        performance_measure(view, "Condensing pressure, design point", "gauge pressure", "p_cond_Pa"),
+        performance_measure(view, "Condensing pressure, hottest day", "gauge pressure", "p_cond_Pa", "hottest"),
+    )
+
+
+def _highest(view: View) -> float:
+    """Return the highest condensing pressure known, as a gauge shows it. [Pa]"""
+    return worst(view.entry, "p_cond_Pa").value - view.case.plant.ambient_pressure_Pa
+
+
+def high_side(view: View) -> Iterator[Component]:
+    """Compare condensing with the nameplate of the high side."""
+    plate = view.case.plant.high_side_limit_Pa
+    missing = [view.numbers.new.missing["hottest"]]
+    fact = f"Condensing reaches {_bar(_highest(view))}."
+    if plate is None:
+        missing.insert(0, "`high_side_limit` in [plant] is not given")
+    else:
+        share = _highest(view) / (plate - view.case.plant.ambient_pressure_Pa)
+        fact = f"Condensing reaches {_bar(_highest(view))}, {share:.0%} of the nameplate pressure."
+    measures = (*_condensing(view), view.pressures("Nameplate of the high side", OldNew(plate, plate)))
+    ask = "Written confirmation of the maximum pressure of each vessel and part of the high side."
+    bound = Bound(view.limits["high_side"])
+    yield judged(
+        Matter("high-side", "High side, nameplate", fact, measures, (bound,), ask), [view.level("high-side")], missing
+    )
+
+
+def switch(view: View) -> Iterator[Component]:
+    """Compare the high-pressure switch, which stays with the vessel, with nameplate and hottest day."""
+    cut_out = view.case.controls.high_pressure_cut_out_Pa if view.case.controls else None
+    plate, highest = view.gauge(view.case.plant.high_side_limit_Pa), _highest(view)
+    bounds = Bound(view.limits["switch_setting"]), Bound(view.limits["switch_margin"])
+    ask = "Range of the switch; which setting the vessel, not the refrigerant, allows."
+    measures = (view.pressures("Cut-out", OldNew(cut_out, cut_out)), *_condensing(view))
+    gaps = [] if plate is not None else ["`high_side_limit` in [plant] is not given"]
+    setting = view.gauge(cut_out)
+    if setting is None:
+        matter = Matter("high-pressure-switch", "High-pressure switch", "", measures, bounds, ask)
+        yield judged(matter, [], ["`high_pressure_cut_out` in [controls] is not given"])
+        return
+    levels = [bounds[1].level(highest / setting)]
+    fact = f"Condensing reaches {_bar(highest)}, {highest / setting:.0%} of the cut-out at {_bar(setting)}"
+    if plate is not None:
+        levels.append(bounds[0].level(setting / plate))
+        fact += f", which is {setting / plate:.0%} of the nameplate"
+        # A switch set too low can be raised as far as the vessel allows.
+        top = (bounds[0].limit.work or 1.0) * plate
+        if highest < top and setting < top:
+            levels[0] = "work" if levels[0] else None
+    matter = Matter("high-pressure-switch", "High-pressure switch", f"{fact}.", measures, bounds, ask)
+    yield judged(matter, levels, [*gaps, view.numbers.new.missing["hottest"]])
+
+
+def relief(view: View) -> Iterator[Component]:
+    """Compare the relief valve of the high side with the highest pressure in operation and at rest."""
+    setting, rest = view.gauge(view.case.plant.relief_setting_Pa), view.gauge(view.numbers.new.p_standstill_Pa)
+    plate, operating = view.gauge(view.case.plant.high_side_limit_Pa), _highest(view)
+    bounds = Bound(view.limits["relief_margin"], "below"), Bound(view.limits["relief_seep"])
+    measures = (
+        view.pressures("Relief setting", OldNew(*[view.case.plant.relief_setting_Pa] * 2)),
+        *_condensing(view),
+        _at_rest(view),
+    )
+    ask = "Setting, capacity and date of the relief valve; whether its material suits the refrigerant."
+    if setting is None:
+        matter = Matter("relief", "Relief valve, setting", "", measures, bounds, ask)
+        yield judged(matter, [], ["`relief_setting` in [plant] is not given"])
+        return
+    levels = [bounds[0].level(setting / operating), bounds[1].level(operating / setting)]
+    fact = f"It opens at {_bar(setting)}, {setting / operating:.2f} times the {_bar(operating)} reached in operation"
+    if rest is not None:
+        levels += ["stop" if rest > setting else bounds[1].level(rest / setting)]
+        fact += f"; at rest there are {_bar(rest)}"
+    if plate is not None and setting > plate * (1.0 + 1e-6):
+        levels.append("stop")
+        fact += f"; it is set above the nameplate's {_bar(plate)}"
+    gaps = [view.numbers.new.missing[name] for name in ("hottest", "standstill")]
+    if plate is None:
+        gaps.append("`high_side_limit` in [plant] is not given")
+    matter = Matter("relief", "Relief valve, setting", f"{fact}.", measures, bounds, ask)
+    yield judged(matter, levels, gaps)
+
+
+def relief_capacity(view: View) -> Iterator[Component]:
+    """Say that the capacity of the relief valve has to be reckoned again for another refrigerant."""
+    if view.is_today:
+        return
+    fact = "The flow that has to be let off differs between refrigerants, and the case does not give the valve's."
+    ask = "Required flow by the standard that applies (its factor for this refrigerant), against the flow stamped."
+    matter = Matter("relief-capacity", "Relief valve, capacity", fact, ask=ask)
+    yield stated(matter, "unknown", source="ASHRAE 15 and EN 13136: capacity depends on the refrigerant (from memory)")
+
+
+def _at_rest(view: View) -> Measure:
+    return view.pressures(
+        "Pressure at rest", OldNew(view.numbers.old.p_standstill_Pa, view.numbers.new.p_standstill_Pa)
+    )
+
+
+def standstill(view: View) -> Iterator[Component]:
+    """Compare the bubble pressure at the highest ambient temperature with the weakest side."""
+    plant, rest = view.case.plant, view.gauge(view.numbers.new.p_standstill_Pa)
+    low, high = view.gauge(plant.low_side_limit_Pa), view.gauge(plant.high_side_limit_Pa)
+    plates = [plate for plate in (low, high) if plate is not None]
+    bound = Bound(view.limits["standstill"])
+    measures = (
+        _at_rest(view),
+        view.pressures("Nameplate of the low side", OldNew(*[plant.low_side_limit_Pa] * 2)),
+        view.pressures("Nameplate of the high side", OldNew(*[plant.high_side_limit_Pa] * 2)),
+    )
+    gaps = [view.numbers.new.missing["standstill"]]
+    gaps += ["`low_side_limit` in [plant] is not given"] if low is None else []
+    share = rest / min(plates) if rest is not None and plates else None
+    fact = ""
+    if rest is not None:
+        fact = f"At rest at the highest ambient temperature there are {_bar(rest)}"
+        fact += f", {share:.0%} of the lowest nameplate's {_bar(min(plates))}." if share is not None else "."
+    ask = "Maximum pressure of the low side: evaporators, suction accumulators, crankcase."
+    matter = Matter("standstill", "Low side at standstill", fact, measures, (bound,), ask)
+    yield judged(matter, [bound.level(share)], gaps)
+
+
+def vacuum(view: View) -> Iterator[Component]:
+    """Tell whether the low side falls below the pressure of the air around it, its switch included."""
+    air, settings = view.case.plant.ambient_pressure_Pa, view.numbers.settings
+    cut_out = next((item.p_Pa.new for item in settings if item.key == "low_pressure_cut_out"), None)
+    levels = [view.level("vacuum")]
+    lowest = worst(view.entry, "p_evap_Pa", min).value
+    fact = f"Evaporating at {lowest / 1e5:.2f} bar a, the air at the plant has {air / 1e5:.2f} bar a"
+    if cut_out is not None and cut_out < air:
+        levels.append("work")
+        fact += f"; the low-pressure switch would cut out at {cut_out / 1e5:.2f} bar a"
+    measures = (
+        performance_measure(view, "Evaporating pressure", "pressure", "p_evap_Pa"),
+        Measure("Air pressure at the plant", "pressure", air, air),
+    )
+    ask = "Tightness of shaft seal, valves and joints under vacuum; where the low-pressure switch may be set."
+    words = "not below the pressure of the air at the plant"
+    matter = Matter("vacuum", "Low side against the air", f"{fact}.", measures, (), ask, words)
+    yield judged(matter, levels)
+
+
+def near_critical(view: View) -> Iterator[Component]:
+    """Compare condensing with the critical temperature."""
+    limit, new, old = view.limits["critical_distance"], view.numbers.new, view.numbers.old
+    distance = new.T_critical_K - worst(view.entry, "T_cond_mean_K").value
+    measures = (
+        performance_measure(view, "Condensing temperature, hottest day", "temperature", "T_cond_mean_K", "hottest"),
+        performance_measure(view, "Condensing temperature, design point", "temperature", "T_cond_mean_K"),
+        Measure("Critical temperature", "temperature", old.T_critical_K, new.T_critical_K),
+    )
+    fact = f"Condensing comes within {distance:.0f} K of the critical temperature."
+    matter = Matter("near-critical", "Condensing near the critical point", fact, measures, (Bound(limit, "below"),))
+    yield judged(matter, [view.level("near-critical")], [new.missing["hottest"]])
+
+
+ROWS = (high_side, switch, relief, relief_capacity, standstill, vacuum, near_critical)

@@ -1,0 +1,48 @@
+"""Rows on set points that move: old gauge value to new gauge value."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+from retrofit.checks.hardware.rows import Bound, Matter, View, stated
+from retrofit.study import Component, Measure
+from retrofit.study.hardware.numbers import Setting
+from retrofit.study.hardware.settings import SET_POINTS
+
+HELD = {
+    "dew": "the same dew temperature",
+    "mean evaporating": "the same mean temperature of the coil",
+    "mean condensing": "the same mean of dew and bubble temperature",
+}
+SOURCE = "common practice; compressor maker's changeover guideline: regulators are set anew because of glide"
+
+
+def settings(view: View) -> Iterator[Component]:
+    """Yield a row for each set point given, and one for those that are not."""
+    given = view.numbers.settings
+    for number, item in enumerate(given, start=1):
+        yield _row(view, item, number)
+    known = {item.key for item in given}
+    absent = [f"`{key}`" for key in (*(key for key, _, _ in SET_POINTS), "fan_steps") if key not in known]
+    if absent:
+        gap = f"{', '.join(absent)} in [controls] not given"
+        ask = "Every pressure setting of the plant, read before the change."
+        yield stated(Matter("set-points", "Other set points", "", ask=ask), "unknown", [gap], SOURCE)
+
+
+def _row(view: View, item: Setting, number: int) -> Component:
+    bound = Bound(view.limits["set_point_shift"])
+    old, new = view.gauge(item.p_Pa.old), view.gauge(item.p_Pa.new)
+    measures = (
+        view.pressures("Setting", item.p_Pa),
+        Measure("Temperature held", "temperature", item.T_K, item.T_K if new is not None else None),
+    )
+    code = f"set-point-{item.key.replace('_', '-')}" + (f"-{number}" if item.key == "fan_steps" else "")
+    if old is None or new is None:
+        return stated(Matter(code, item.name, "", measures, (bound,)), "unknown", [item.reason], SOURCE)
+    fact = f"{old / 1e5:.2f} bar g becomes {new / 1e5:.2f} bar g at {HELD[item.held]}."
+    verdict = "adjust" if bound.level(abs(new - old) / 1e5) else "keep"
+    return stated(Matter(code, item.name, fact, measures, (bound,), "Range of the control."), verdict, (), SOURCE)
+
+
+ROWS = (settings,)
