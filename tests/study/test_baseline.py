@@ -14,7 +14,7 @@ import pytest
 from hypothesis import HealthCheck, given, settings
 from hypothesis import strategies as st
 
-from retrofit.case import Default
+from retrofit.case import Default, read_case
 from retrofit.case.model import CaseFile
 from retrofit.cycle import Settings, solve_cycle
 from retrofit.properties import fluid
@@ -555,6 +555,17 @@ def test_a_gauge_far_from_the_case_is_told(case_of):
     assert values["evaporator_superheat"] == pytest.approx(6.0, abs=1e-3)
 
 
+def test_a_pressure_drop_of_the_case_is_not_a_contradiction(case_of):
+    """Evaporating at -8 degC with 2 K of drop is -10 degC at the compressor: a gauge that says -11 goes with it."""
+    p_bar = float(fluid("R404A").p_dew(KELVIN - 11.0)) / 1e5
+    readings = {"suction_pressure": f"{p_bar:.5f} bar a"}
+    _, _, plain = found_in(case_read(case_of, readings, duty={"evaporating": "-7.9 degC"}))
+    _, _, with_drop = found_in(case_read(case_of, readings, evaporator={"pressure_drop": "2 K"}))
+
+    assert "reading-against-case-evaporating" in plain
+    assert not with_drop
+
+
 def test_part_load_hides_the_swept_volume(case_of):
     """At part load no one knows what of the swept volume ran, unless the compressor only starts and stops."""
     readings = GOOD | {"load": "60 %"}
@@ -617,6 +628,33 @@ def test_doubtful_readings_replace_nothing(case_of):
     assert new.duty.line_superheat_K == pytest.approx(values["compressor_superheat"] - 5.0, abs=1e-9)
     assert new.compressor == case.compressor
     assert new.duty.subcooling_K == values["subcooling"]
+
+
+def test_a_case_file_goes_the_whole_way(tmp_path):
+    """What the reader lists as assumed is replaced, what the file says stays."""
+    keys = "\n".join(f"{key} = {text if isinstance(text, int | float) else repr(text)}" for key, text in GOOD.items())
+    file = tmp_path / "plant.toml"
+    file.write_text(
+        '[plant]\nrefrigerant = "R404A"\n[duty]\ncooling = "120 kW"\nevaporating = "-8 degC"\n'
+        'condensing = "42 degC"\nsubcooling = "2 K"\n[compressor]\nswept_volume = "201 m3/h"\nmotor_efficiency = 0.92\n'
+        f'[compare]\ncandidates = ["R448A"]\n[readings]\n{keys}\n',
+        encoding="utf-8",
+    )
+    case = read_case(file)
+    found, values, problems = found_in(case)
+
+    new = case_with_readings(case, found)
+
+    assert not problems
+    assert new.duty.subcooling_K == 2.0
+    assert new.compressor.isentropic_efficiency == values["isentropic_efficiency"]
+    replaced = {default.key for default in new.defaults if default.why.startswith("from readings: ")}
+    assert replaced == {
+        "duty.useful_superheat",
+        "duty.line_superheat",
+        "compressor.isentropic_efficiency",
+        "compressor.volumetric_efficiency",
+    }
 
 
 def test_superheat_at_the_compressor_alone_keeps_the_whole(case_of):
