@@ -43,3 +43,24 @@ def _case_of(existing="R404A", candidates=("R448A", "R449A"), *, plant=(), duty=
     read = CaseFile.model_validate(tables)
     parts = {name: getattr(read, name) for name in ("plant", "duty", "compressor", "compare")}
     return Case(title="A plant", about=None, **parts, path="plant.toml", text="", given={}, defaults=())
+
+
+@pytest.fixture(scope="session")
+def case_with():
+    """Return a function that makes a case at sea level with any tables, of keys and texts of the case file."""
+    return _case_with
+
+
+def _case_with(existing="R404A", candidates=("R448A",), **tables):
+    """Return a case of an ordinary plant; a table given is laid over it, key by key, None taking a key away."""
+    ordinary = {
+        "plant": {"refrigerant": existing},
+        "duty": {"cooling": "120 kW", "evaporating": "-8 degC", "condensing": "42 degC"},
+        "compressor": {},
+        "compare": {"candidates": list(candidates)},
+    }
+    laid = {name: {**ordinary.get(name, {}), **table} for name, table in {**ordinary, **tables}.items()}
+    kept = {name: {k: v for k, v in table.items() if v is not None} for name, table in laid.items()}
+    read = CaseFile.model_validate(kept, context={"p_ambient_Pa": 101_325.0})
+    parts = {name: getattr(read, name) for name in CaseFile.model_fields if name not in ("title", "about")}
+    return Case(title="A plant", about=None, **parts, path="plant.toml", text="", given={}, defaults=())
