@@ -2,10 +2,12 @@
 
 from __future__ import annotations
 
+import datetime
 from dataclasses import replace
 
 from retrofit.checks.gates import GATES
 from retrofit.checks.hardware import hardware_findings, hardware_rows
+from retrofit.checks.law import law_findings, with_law
 from retrofit.checks.thresholds import thresholds_for
 from retrofit.study import Comparison, Entry, Finding
 
@@ -14,15 +16,17 @@ VERDICTS = {"stop": "does not suit", "unknown": "cannot be said", "work": "suits
 SUITS = "suits"
 
 
-def assess(comparison: Comparison) -> Comparison:
+def assess(comparison: Comparison, on: datetime.date | None = None) -> Comparison:
     """Return the result with findings, the hardware table and a verdict for every refrigerant.
 
     Args:
         comparison: A result.
-    Returns: The same numbers, with findings (worst first), hardware and verdicts.
-    Raises: CaseFileError if the case sets a threshold that there is not.
+        on: The day to read the tables of law for; today if left out.
+    Returns: The same numbers, with findings (worst first), hardware, law and verdicts.
+    Raises: CaseFileError if the case sets a threshold that there is not, or a table of law of the user's is faulty.
     """
     thresholds_for(comparison.case)
+    comparison = with_law(comparison, on)
     existing = _assessed(comparison, comparison.existing)
     candidates = tuple(_assessed(comparison, entry) for entry in comparison.candidates)
     return replace(comparison, existing=existing, candidates=candidates)
@@ -32,6 +36,7 @@ def _assessed(comparison: Comparison, entry: Entry) -> Entry:
     found = [finding for gate in GATES for finding in gate(comparison, entry)]
     rows = hardware_rows(comparison, entry, found)
     found += hardware_findings(rows, entry is comparison.existing)
+    found += law_findings(comparison, entry)
     if entry.status != "ok":
         found.insert(0, _not_computed(entry))
     found.sort(key=lambda finding: LEVELS.index(finding.level))

@@ -1,36 +1,52 @@
-"""The charge a plant takes of each refrigerant: today's as given, a candidate's as a first estimate."""
+"""The charge of the largest independent circuit with another refrigerant: what one leak can let out."""
 
 from __future__ import annotations
 
+from dataclasses import dataclass
+
+from retrofit.case import Case
 from retrofit.equipment.vessels import charge_estimate
-from retrofit.study.result import Comparison, Entry
-
-LIQUID = "expansion valve inlet"
+from retrofit.study.result import Entry
 
 
-def charge_range_kg(comparison: Comparison, entry: Entry) -> tuple[float, float, float] | None:
-    """Return lowest, expected and highest charge of a refrigerant.
+@dataclass(frozen=True)
+class CircuitCharge:
+    """A charge that one leak can let out.
+
+    Attributes:
+        lowest_kg, expected_kg, highest_kg: The charge; None where `reason` says why.
+        of: "largest circuit", or "whole plant" if the largest circuit is not given: no circuit holds more.
+        reason: What is missing.
+    """
+
+    lowest_kg: float | None
+    expected_kg: float | None
+    highest_kg: float | None
+    of: str
+    reason: str = ""
+
+
+def circuit_charge(case: Case, entry: Entry, existing: Entry) -> CircuitCharge:
+    """Return the charge of the largest independent circuit with a refrigerant.
 
     Args:
-        comparison: A result.
-        entry: One of its refrigerants.
-    Returns: Today's charge three times for the existing one; for a candidate the estimate of the hardware's numbers,
-        or by the ratio of liquid densities; None if today's charge or a density is not known. [kg]
-    Source: `retrofit.equipment.vessels.charge_estimate`.
+        case: The case.
+        entry: The refrigerant.
+        existing: The refrigerant in the plant, whose charge is taken as given, without a range.
+    Source: the same volume of liquid, m_new = m_old rho_new / rho_old (`charge_estimate`).
     """
-    today_kg = comparison.case.plant.charge_kg
-    if today_kg is None or entry.refrigerant.designation == comparison.existing.refrigerant.designation:
-        return None if today_kg is None else (today_kg, today_kg, today_kg)
-    filling = entry.hardware_numbers.filling if entry.hardware_numbers else None
-    if filling:
-        return filling.lowest_kg, filling.expected_kg, filling.highest_kg
-    old, new = _liquid_density(comparison.existing), _liquid_density(entry)
+    circuit = case.room.largest_circuit_kg if case.room else None
+    today, of = (case.plant.charge_kg, "whole plant") if circuit is None else (circuit, "largest circuit")
+    if today is None:
+        return CircuitCharge(None, None, None, "", "`largest_circuit` in [room], or `charge` in [plant]")
+    if entry.refrigerant.designation == existing.refrigerant.designation:
+        return CircuitCharge(today, today, today, of)
+    numbers = entry.hardware_numbers
+    old, new = (
+        (numbers.old.liquid_density_kg_per_m3, numbers.new.liquid_density_kg_per_m3) if numbers else (None, None)
+    )
     if old is None or new is None:
-        return None
-    found = charge_estimate(today_kg, old, new)
-    return float(found.lowest_kg), float(found.expected_kg), float(found.highest_kg)
-
-
-def _liquid_density(entry: Entry) -> float | None:
-    """Return the density of liquid before the expansion valve, None without states. [kg/m3]"""
-    return next((point.density_kg_per_m3 for point in entry.points if point.name == LIQUID), None)
+        name = entry.refrigerant.designation
+        return CircuitCharge(None, None, None, of, f"density of the liquid of {name}, which is not computed")
+    found = charge_estimate(today, old, new)
+    return CircuitCharge(float(found.lowest_kg), float(found.expected_kg), float(found.highest_kg), of)

@@ -13,6 +13,7 @@ from retrofit.case import Case
 from retrofit.properties import Grade
 from retrofit.refrigerants import Caution, Refrigerant
 from retrofit.study.hardware.numbers import HardwareNumbers
+from retrofit.study.law import LawBasis, LawCheck
 
 FloatArray = NDArray[np.float64]
 Number = TypeVar("Number", float, FloatArray)
@@ -280,6 +281,7 @@ class Entry:
         T_limit_K: Up to where the components' equations of state are stated to hold.
         hardware_numbers: What the components of the plant see with it, beside today's; None if not computed.
         cautions: From its safety class; always there.
+        law: What the tables of law say; None until looked into, or without a jurisdiction or a table for it.
         findings, hardware, verdict: What the checks say; empty until they have run.
     """
 
@@ -299,6 +301,7 @@ class Entry:
     T_discharge_difference_K: float | None = None
     T_limit_K: float | None = None
     hardware_numbers: HardwareNumbers | None = None
+    law: LawCheck | None = None
     findings: tuple[Finding, ...] = ()
     hardware: tuple[Component, ...] = ()
     verdict: str = ""
@@ -316,6 +319,7 @@ class Comparison:
         swept_volume_from: "case", or "duty" if the case does not give it and today's duty set it.
         versions: Versions the numbers depend on, by name.
         baseline: How the plant runs today, None if the case has no readings.
+        law: Jurisdiction, day and tables behind what is said of law; None if the case names no jurisdiction.
     """
 
     case: Case
@@ -325,6 +329,7 @@ class Comparison:
     swept_volume_from: str
     versions: Mapping[str, str]
     baseline: Baseline | None = None
+    law: LawBasis | None = None
 
     @property
     def entries(self) -> tuple[Entry, ...]:
