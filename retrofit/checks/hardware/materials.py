@@ -70,16 +70,16 @@ def oil(view: View) -> Iterator[Component]:
     level = view.level("oil")
     ask = "Oil, grade and viscosity that the maker asks for; a sample of what is inside; the limit of old oil."
     fact = view.fact("oil", f"Usual {usual.text or 'not stated'}; in the plant {here or 'not stated'}.")
+    gaps = ["the kind of oil, `oil` in [plant]"] if here in (None, "unknown", "mixed") else []
     source = "; ".join(dict.fromkeys((usual.source or "catalogue, which states none", bound.limit.source)))
     if view.is_today:
-        gaps = ["the kind of oil, `oil` in [plant]"] if here in (None, "unknown", "mixed") else []
         matter = Matter("oil", "Compressor oil", f"In the plant {here or 'not stated'}.", (), (), ask)
         yield judged(matter, [], gaps, usual.source or "catalogue, which states none")
         return
     measures = (Measure("Old oil left", "fraction", 1.0, left),) if level == "work" else ()
     matter = Matter("oil", "Compressor oil", fact, measures, (bound,), ask)
     if level != "work":
-        yield judged(matter, [level], [], source)
+        yield judged(matter, [level], gaps, source)
     elif left is None:
         yield stated(matter, "replace", [view.numbers.missing["residual_oil"]], source)
     else:

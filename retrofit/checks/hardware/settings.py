@@ -20,8 +20,9 @@ SOURCE = "common practice; compressor maker's changeover guideline: regulators a
 def settings(view: View) -> Iterator[Component]:
     """Yield a row for each set point given, and one for those that are not."""
     given = view.numbers.settings
-    for number, item in enumerate(given, start=1):
-        yield _row(view, item, number)
+    steps = [item for item in given if item.key == "fan_steps"]
+    for item in given:
+        yield _row(view, item, steps.index(item) + 1 if item in steps else 0)
     known = {item.key for item in given}
     absent = [f"`{key}`" for key in (*(key for key, _, _ in SET_POINTS), "fan_steps") if key not in known]
     if absent:
@@ -30,14 +31,14 @@ def settings(view: View) -> Iterator[Component]:
         yield stated(Matter("set-points", "Other set points", "", ask=ask), "unknown", [gap], SOURCE)
 
 
-def _row(view: View, item: Setting, number: int) -> Component:
+def _row(view: View, item: Setting, step: int) -> Component:
     bound = Bound(view.limits["set_point_shift"])
     old, new = view.gauge(item.p_Pa.old), view.gauge(item.p_Pa.new)
     measures = (
         view.pressures("Setting", item.p_Pa),
         Measure("Temperature held", "temperature", item.T_K, item.T_K if new is not None else None),
     )
-    code = f"set-point-{item.key.replace('_', '-')}" + (f"-{number}" if item.key == "fan_steps" else "")
+    code = f"set-point-{item.key.replace('_', '-')}" + (f"-{step}" if step else "")
     if old is None or new is None:
         return stated(Matter(code, item.name, "", measures, (bound,)), "unknown", [item.reason], SOURCE)
     fact = f"{old / 1e5:.2f} bar g becomes {new / 1e5:.2f} bar g at {HELD[item.held]}."
