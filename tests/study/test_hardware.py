@@ -349,3 +349,13 @@ def test_where_the_hot_day_has_no_solution_the_reason_says_so(case_with):
 
     assert found.hottest is None
     assert "critical temperature of R404A" in found.missing["hottest"]
+
+
+def test_a_day_on_which_todays_plant_does_not_run_counts_at_standstill_only(case_with):
+    """At 60 degC R404A has no solution; R452A, with a critical temperature 3 K higher, has, but is not held to it."""
+    tables = {**FULL, "plant": {"highest_ambient": "60 degC"}, "duty": {**FULL["duty"], "condensing": "42 degC"}}
+    found = compare(case_with("R404A", ["R452A"], **tables)).candidates[0].hardware_numbers.new
+
+    assert found.hottest is None
+    assert "standstill only" in found.missing["hottest"]
+    assert found.p_standstill_Pa > 28e5

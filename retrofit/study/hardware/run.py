@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from retrofit.case import Case
 from retrofit.equipment.oil import residual_oil
@@ -69,7 +69,7 @@ def hardware_numbers(today: Today, behaviour: Fluid, entry: Entry) -> HardwareNu
     basis = next(basis for basis in _bases(entry) if basis in today.sides)
     old = today.sides[basis]
     is_today = behaviour.designation == today.behaviour.designation
-    new = old if is_today else _side(site, behaviour, entry, basis)
+    new = old if is_today else _comparable(old, _side(site, behaviour, entry, basis))
     current, pull_down_current, no_current = _currents(site.case, old, new)
     distributor = _distributor(old, new)
     filling, no_filling = _filling(site.case, (today.behaviour, old), (behaviour, new))
@@ -88,6 +88,17 @@ def hardware_numbers(today: Today, behaviour: Fluid, entry: Entry) -> HardwareNu
         settings=settings_of(site, (today.behaviour, old.design), behaviour),
         missing={"current": no_current, "filling": no_filling, "residual_oil": no_oil},
     )
+
+
+def _comparable(old: Side, new: Side) -> Side:
+    """Return a side without a hottest day on which today's plant, which carries its duty, does not run either."""
+    if old.hottest is not None or new.hottest is None:
+        return new
+    reason = (
+        f"{old.refrigerant} has no solution on a day that hot, so that `highest_ambient` in [plant] is taken to hold "
+        "at standstill only"
+    )
+    return replace(new, hottest=None, missing={**new.missing, "hottest": reason})
 
 
 def _side(site: Site, behaviour: Fluid, entry: Entry, basis: str) -> Side:
