@@ -25,6 +25,7 @@ RESIDUAL_TOLERANCE = 1e-9  # aimed at, relative; a condition counts as solved be
 SOLVED_BELOW = 1e-6
 MOST_STEPS = 40
 LONGEST_STEP_K = 10.0
+SMALLEST_LEAD_K = 0.1
 CHUNK = 2048  # conditions solved together: small enough for the processor's cache
 EVAPORATOR_PARTS, CONDENSER_PARTS = 4, 4
 DESUPERHEATING = np.array([0.0, 0.35, 0.7])  # shares of the way from discharge to dew point
@@ -55,6 +56,9 @@ class Machine:
             efficiency.
         evaporator, condenser: The exchangers.
         settings: Superheat, subcooling, pressure drops and heat loss; its efficiencies are not used.
+        superheat_share, subcooling_share: Useful superheat and subcooling take at most these shares of the
+            difference between the medium's inlet and dew or bubble point: an exchanger hardly loaded cannot
+            reach what is set.
     """
 
     swept_volume_m3_per_s: ArrayLike
@@ -62,6 +66,8 @@ class Machine:
     evaporator: Exchanger
     condenser: Exchanger
     settings: Settings
+    superheat_share: float = np.inf
+    subcooling_share: float = np.inf
 
 
 @dataclass(frozen=True)
@@ -213,11 +219,12 @@ def _state(fluid: Fluid, machine: Machine, given: Mapping[str, FloatArray], T: F
     p_evap, p_cond = fluid.p_dew(T[0]), fluid.p_dew(T[1])
     p_suction = fluid.p_dew(T[0] - given["suction_drop_K"])
     isentropic, volumetric = machine.efficiencies(fluid.p_dew(T[1] + given["discharge_drop_K"]) / p_suction, p_suction)
-    settings = Settings(
-        isentropic_efficiency=isentropic,
-        volumetric_efficiency=volumetric,
-        **{name: given[name] for name in SETTINGS},
-    )
+    superheat, subcooling = _in_reach(fluid, machine, given, T[0], p_cond)
+    held = {name: given[name] for name in SETTINGS} | {
+        "useful_superheat_K": superheat,
+        "subcooling_K": subcooling,
+    }
+    settings = Settings(isentropic_efficiency=isentropic, volumetric_efficiency=volumetric, **held)
     cycle = solve_cycle(fluid, p_evap, p_cond, settings)
     per_swept = volumetric * cycle.density_suction_kg_per_m3
     is_fixed = np.isnan(given["cooling"])
@@ -233,6 +240,20 @@ def _state(fluid: Fluid, machine: Machine, given: Mapping[str, FloatArray], T: F
         ]
     )
     return _State(cycle, mass_flow, mass_flow / per_swept, there - needed, needed)
+
+
+def _in_reach(
+    fluid: Fluid, machine: Machine, given: Mapping[str, FloatArray], T_evap: FloatArray, p_cond: FloatArray
+) -> tuple[FloatArray, FloatArray]:
+    """Return useful superheat and subcooling as set, or as far as the media let them come."""
+    superheat, subcooling = given["useful_superheat_K"], given["subcooling_K"]
+    if np.isfinite(machine.superheat_share):
+        lead = np.maximum(given["T_in_evap"] - T_evap, SMALLEST_LEAD_K)
+        superheat = np.minimum(superheat, machine.superheat_share * lead)
+    if np.isfinite(machine.subcooling_share):
+        lead = np.maximum(fluid.bubble(p_cond).T_K - given["T_in_cond"], SMALLEST_LEAD_K)
+        subcooling = np.minimum(subcooling, machine.subcooling_share * lead)
+    return superheat, subcooling
 
 
 def _solve(fluid: Fluid, machine: Machine, conditions: _Conditions) -> Balance:

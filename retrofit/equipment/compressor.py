@@ -52,9 +52,7 @@ class EfficiencyCurve:
         """
         _check_efficiencies("constant efficiency", isentropic, volumetric)
         values = np.array([[isentropic] * 2, [volumetric] * 2], dtype=float)
-        return cls(
-            Curve(np.array([1.0, 2.0]), np.stack([values, np.zeros_like(values)], axis=1)), (1.0, np.inf)
-        )
+        return cls(Curve(np.array([1.0, 2.0]), np.stack([values, np.zeros_like(values)], axis=1)), (1.0, np.inf))
 
     @classmethod
     def through(cls, points: Sequence[Sequence[float]]) -> EfficiencyCurve:
@@ -74,9 +72,7 @@ class EfficiencyCurve:
         covered = (float(x[0]), float(x[-1]))
         return cls(_levelled(Curve(x, np.stack([values, slopes], axis=1))), covered)
 
-    def at(
-        self, pressure_ratio: ArrayLike, p_suction_Pa: ArrayLike | None = None
-    ) -> tuple[FloatArray, FloatArray]:
+    def at(self, pressure_ratio: ArrayLike, p_suction_Pa: ArrayLike | None = None) -> tuple[FloatArray, FloatArray]:
         """Return isentropic and volumetric efficiency. [-]
 
         Args:
@@ -117,9 +113,7 @@ def _check_points(points: Sequence[Sequence[float]]) -> None:
         if not 1.0 <= ratio < np.inf:
             raise QuantityError(f"{where}: pressure ratio {ratio:g} is not a number from 1 up")
         if ratio <= before:
-            raise QuantityError(
-                f"{where}: pressure ratio {ratio:g} does not rise above {before:g} of the one before"
-            )
+            raise QuantityError(f"{where}: pressure ratio {ratio:g} does not rise above {before:g} of the one before")
         _check_efficiencies(where, isentropic, volumetric)
         before = ratio
 
@@ -169,9 +163,7 @@ def _levelled(curve: Curve) -> Curve:
     x, count = curve.x, len(curve.nodes)
     added = np.array([x[0] + ROUNDED_SHARE * (x[1] - x[0]), x[-1] - ROUNDED_SHARE * (x[-1] - x[-2])])
     quantities = range(count)
-    on_it = np.stack(
-        [curve(added, *quantities), curve(added, *quantities, weights=hermite_slope_weights)], axis=1
-    )
+    on_it = np.stack([curve(added, *quantities), curve(added, *quantities, weights=hermite_slope_weights)], axis=1)
     nodes = curve.nodes.copy()
     nodes[:, 1, [0, -1]] = 0.0
     order = np.argsort(np.concatenate([x, added]))
@@ -220,9 +212,7 @@ class EfficiencyMap:
         curve = EfficiencyCurve.through(np.array([np.exp(ln_ratio), *mean]).T.tolist())
         return cls(surface, curve, (float(isentropic), float(volumetric)))
 
-    def at(
-        self, pressure_ratio: ArrayLike, p_suction_Pa: ArrayLike | None = None
-    ) -> tuple[FloatArray, FloatArray]:
+    def at(self, pressure_ratio: ArrayLike, p_suction_Pa: ArrayLike | None = None) -> tuple[FloatArray, FloatArray]:
         """Return isentropic and volumetric efficiency. [-]
 
         Args:
@@ -321,9 +311,7 @@ def flow_at_other_superheat(density_over_rated: ArrayLike, factor: float = FLOW_
 # -- part load ---------------------------------------------------------------------------------------
 
 
-def operation(
-    kind: str, steps: int, lowest_speed: float, needed_over_full: ArrayLike
-) -> tuple[FloatArray, FloatArray]:
+def operation(kind: str, steps: int, lowest_speed: float, needed_over_full: ArrayLike) -> tuple[FloatArray, FloatArray]:
     """Return how a compressor meets a part load: share of the time it runs, and speed while it runs.
 
     A stepped machine (several compressors, or cylinders unloaded) changes between the two steps around the load; the

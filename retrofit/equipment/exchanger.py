@@ -13,7 +13,7 @@ from numpy.typing import ArrayLike, NDArray
 
 FloatArray = NDArray[np.float64]
 ARRANGEMENTS = ("counterflow", "crossflow", "flooded")
-SMALLEST_DIFFERENCE_K = 1e-3
+SMALLEST_DIFFERENCE_K = 0.01  # below it a part of an exchanger counts as pinched
 
 
 @dataclass(frozen=True)
@@ -69,7 +69,8 @@ def _mean_of_parts(difference: FloatArray, share: FloatArray) -> FloatArray:
     close = np.abs(ratio) < 1e-5
     logarithmic = np.where(close, 0.5 * (near + far), (far - near) / np.where(close, 1.0, ratio))
     mean: FloatArray = 1.0 / np.sum(np.diff(share, axis=0) / logarithmic, axis=0)
-    return np.where(lowest > SMALLEST_DIFFERENCE_K, mean, np.minimum(lowest, SMALLEST_DIFFERENCE_K))
+    # No jump where the smallest difference closes: a solver has to see its way back.
+    return np.where(lowest > 0.0, mean * np.minimum(1.0, lowest / SMALLEST_DIFFERENCE_K), lowest)
 
 
 def _behind_effectiveness(mean_lead: FloatArray, change: FloatArray) -> FloatArray:

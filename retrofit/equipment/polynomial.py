@@ -44,9 +44,7 @@ def ten_coefficients(coefficients: Sequence[float], suction: ArrayLike, discharg
     Source: AHRI 540 and EN 12900, the order of the terms from memory.
     """
     if len(coefficients) != COEFFICIENTS:
-        raise QuantityError(
-            f"{len(coefficients)} coefficients given; the polynomial has {COEFFICIENTS}, C1 to C10"
-        )
+        raise QuantityError(f"{len(coefficients)} coefficients given; the polynomial has {COEFFICIENTS}, C1 to C10")
     s, d = np.asarray(suction, dtype=float), np.asarray(discharge, dtype=float)
     terms = (1.0, s, d, s * s, s * d, d * d, s**3, d * s * s, s * d * d, d**3)
     return np.asarray(sum(c * term for c, term in zip(coefficients, terms, strict=True)))
@@ -91,9 +89,7 @@ class CompressorRating:
         for one, other in (("capacity", "mass_flow"), ("power", "current"), ("superheat_K", "return_gas_K")):
             if (getattr(self, one) is None) == (getattr(self, other) is None):
                 names = " and ".join(_named(name) for name in (one, other))
-                raise QuantityError(
-                    f"of {names} exactly one describes a rating: give one, leave out the other"
-                )
+                raise QuantityError(f"of {names} exactly one describes a rating: give one, leave out the other")
         for name in ("capacity", "mass_flow", "power", "current"):
             _check_coefficients(_named(name), getattr(self, name))
         _check_range(self)
@@ -131,9 +127,7 @@ def _check_coefficients(name: str, given: tuple[float, ...] | None) -> None:
     if given is None:
         return
     if len(given) != COEFFICIENTS:
-        raise QuantityError(
-            f"{name} has {len(given)} coefficients; the polynomial has {COEFFICIENTS}, C1 to C10"
-        )
+        raise QuantityError(f"{name} has {len(given)} coefficients; the polynomial has {COEFFICIENTS}, C1 to C10")
     for number, value in enumerate(given, start=1):
         if not math.isfinite(value):
             raise QuantityError(f"{name}: coefficient C{number} is {value}, not a finite number")
@@ -143,9 +137,7 @@ def _check_range(rating: CompressorRating) -> None:
     ranges = (("evaporating", rating.T_evap_range_K), ("condensing", rating.T_cond_range_K))
     for name, (low, high) in ranges:
         if not low < high:
-            raise QuantityError(
-                f"{name} range {_celsius(low)} to {_celsius(high)} does not rise: lower end first"
-            )
+            raise QuantityError(f"{name} range {_celsius(low)} to {_celsius(high)} does not rise: lower end first")
     highest, lowest = rating.T_evap_range_K[1], rating.T_cond_range_K[0]
     if not lowest > highest:
         raise QuantityError(
@@ -156,9 +148,7 @@ def _check_range(rating: CompressorRating) -> None:
 
 def _check_supply(voltage_V: float | None, phases: int | None, power_factor: float | None) -> None:
     if voltage_V is None or phases is None or power_factor is None:
-        raise QuantityError(
-            "a current makes no power without voltage, phases and power factor; give all three"
-        )
+        raise QuantityError("a current makes no power without voltage, phases and power factor; give all three")
     if phases not in (1, 3):
         raise QuantityError(f"{phases} phases: a supply has 1 or 3")
     if not (voltage_V > 0.0 and 0.0 < power_factor <= 1.0):
@@ -302,9 +292,7 @@ def _fault(reading: _Reading, states: _States) -> str:
         if beyond[worst] > 0.0 or (unit and values[worst] <= low):
             where = f"{_celsius(states.T_evap_K[worst[0], 0])} evaporating and {_celsius(states.T_cond_K[0, worst[1]])}"
             amount = f"{values[worst]:.3g} {unit}".rstrip()
-            return (
-                f"the polynomials give {name} of {amount} at {where} condensing (dew); possible is {allowed}"
-            )
+            return f"the polynomials give {name} of {amount} at {where} condensing (dew); possible is {allowed}"
     return f"the polynomials give {' and '.join(reading.unusual())}"
 
 
@@ -317,9 +305,7 @@ def _what_was_meant(rating: CompressorRating, states: _States, swept_volume: flo
     for names in (given, *([name] for name in given)):
         thousands: dict[str, Any] = {name: tuple(1e3 * c for c in getattr(rating, name)) for name in names}
         if _read(replace(rating, **thousands), states, swept_volume).is_usual:
-            return (
-                f"with {' and '.join(names)} in kW they would be usual: multiply those coefficients by 1000"
-            )
+            return f"with {' and '.join(names)} in kW they would be usual: multiply those coefficients by 1000"
     return ""
 
 

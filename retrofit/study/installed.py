@@ -28,6 +28,8 @@ from retrofit.study.performance import as_numbers, performance
 from retrofit.study.result import FloatArray, Installed, Operation, Performance
 
 Pair = tuple[FloatArray, FloatArray]
+USUAL_SUPERHEAT_SHARE = 0.65  # of inlet minus evaporating temperature: rating condition of EN 328, from memory
+USUAL_SUBCOOLING_SHARE = 0.7  # of bubble point minus inlet: our own
 
 
 class EfficiencyModel(Protocol):
@@ -89,6 +91,7 @@ class ExistingPlant:
     Attributes:
         machine: The machine, with today's conductances.
         needed_W: Cooling that the plant has to deliver.
+        today_W: Cooling of the plant today, running at full.
         start_K: Evaporating and condensing dew temperature of today's point, to start a solution from.
     """
 
@@ -96,6 +99,7 @@ class ExistingPlant:
     machine: Machine
     model: EfficiencyModel
     needed_W: float
+    today_W: float
     start_K: tuple[float, float]
 
 
@@ -137,9 +141,26 @@ def existing_plant(
         evaporator=replace(evaporator, conductance_W_per_K=float(cooling) / differences["evaporator"]),
         condenser=replace(condenser, conductance_W_per_K=float(heat) / differences["condenser"]),
         settings=cycle.settings,
+        superheat_share=_superheat_share(cycle, evaporator),
+        subcooling_share=_subcooling_share(cycle, condenser),
     )
     start = float(cycle.T_evap_dew_K), float(cycle.T_cond_dew_K)
-    return ExistingPlant(case, machine, model, min(case.duty.cooling_W, float(cooling)), start)
+    needed = min(case.duty.cooling_W, float(cooling))
+    return ExistingPlant(case, machine, model, needed, float(cooling), start)
+
+
+def _superheat_share(cycle: Cycle, evaporator: Exchanger) -> float:
+    """Return the largest share of the inlet difference that superheat takes: a usual one, or today's if larger."""
+    if evaporator.arrangement == "flooded":
+        return float(np.inf)
+    lead = np.asarray(evaporator.secondary.T_in_K) - cycle.T_evap_dew_K
+    return max(USUAL_SUPERHEAT_SHARE, float(np.asarray(cycle.settings.useful_superheat_K) / lead))
+
+
+def _subcooling_share(cycle: Cycle, condenser: Exchanger) -> float:
+    """Return the largest share of the inlet difference that subcooling takes: a usual one, or today's if larger."""
+    lead = cycle.T_cond_bubble_K - np.asarray(condenser.secondary.T_in_K)
+    return max(USUAL_SUBCOOLING_SHARE, float(np.asarray(cycle.settings.subcooling_K) / lead))
 
 
 def _exchanger(name: str, table: ExchangerTable | None, heat_W: FloatArray) -> Exchanger:
@@ -167,7 +188,7 @@ def run_installed(plant: ExistingPlant, behaviour: Fluid) -> Installed:
     factors = _film_factors(plant.case, behaviour.designation)
     # At full with the films of the case; the same cooling; and at full with equal films, to show what they do.
     machine = _with_films(plant.machine, np.array([[factors[0]] * 2 + [1.0], [factors[1]] * 2 + [1.0]]))
-    found = balance(behaviour, machine, *plant.start_K, np.array([np.nan, plant.needed_W, np.nan]))
+    found = balance(behaviour, machine, *plant.start_K, np.array([np.nan, plant.today_W, np.nan]))
     for reason in found.reason[:2]:
         if reason:
             raise NoSolutionError(f"{behaviour.designation} in the plant as installed: {reason}")
@@ -179,7 +200,7 @@ def run_installed(plant: ExistingPlant, behaviour: Fluid) -> Installed:
     return Installed(
         full=full,
         same_cooling=same,
-        operation=_operation(plant, behaviour, full, same, factors),
+        operation=_operation(plant, behaviour, full, factors),
         is_covered=bool(is_covered[0]),
         film_factors=factors,
         cooling_with_equal_films_W=float(cooling[2]),
@@ -198,13 +219,10 @@ def run_at_condenser_inlet(plant: ExistingPlant, behaviour: Fluid, T_in_K: float
     Raises: NoSolutionError with the reason if the plant does not balance.
     """
     machine = _with_films(plant.machine, _film_factors(plant.case, behaviour.designation))
-    warmer = T_in_K - np.asarray(machine.condenser.secondary.T_in_K)
+    warmer_K = T_in_K - float(np.asarray(machine.condenser.secondary.T_in_K))
     secondary = replace(machine.condenser.secondary, T_in_K=T_in_K)
-    machine = replace(machine, condenser=replace(machine.condenser, secondary=secondary))
-    found = balance(behaviour, machine, plant.start_K[0], plant.start_K[1] + warmer)
-    if not found.is_solved:
-        raise NoSolutionError(f"{behaviour.designation} in the plant as installed: {found.reason}")
-    return as_numbers(performance(found.cycle, found.mass_flow_kg_per_s * found.cycle.refrigerating_effect_J_per_kg))
+    hotter = replace(machine, condenser=replace(machine.condenser, secondary=secondary))
+    return _solved(plant, behaviour, hotter, warmer_K=warmer_K)
 
 
 def _film_factors(case: Case, designation: str) -> tuple[float, float]:
@@ -224,18 +242,14 @@ def _with_films(machine: Machine, factors: ArrayLike) -> Machine:
 
 
 def _operation(
-    plant: ExistingPlant,
-    behaviour: Fluid,
-    full: Performance[float],
-    same: Performance[float],
-    factors: tuple[float, float],
+    plant: ExistingPlant, behaviour: Fluid, full: Performance[float], factors: tuple[float, float]
 ) -> Operation:
     """Return how the machine meets the cooling needed: part of the time, at part speed, or not at all."""
     compressor, needed = plant.case.compressor, plant.needed_W
     kind = compressor.speed or "fixed"
     share = min(1.0, needed / full.cooling_W)
     if kind == "variable" and share < 1.0:
-        return _slowed(plant, behaviour, same, factors)
+        return _slowed(plant, behaviour, factors)
     run_time, speed = operation(kind, compressor.steps or 1, compressor.lowest_speed or 1.0, share)
     return Operation(
         control=kind,
@@ -247,20 +261,27 @@ def _operation(
     )
 
 
-def _slowed(
-    plant: ExistingPlant, behaviour: Fluid, same: Performance[float], factors: tuple[float, float]
-) -> Operation:
+def _slowed(plant: ExistingPlant, behaviour: Fluid, factors: tuple[float, float]) -> Operation:
     """Return the operation at the speed that just delivers the cooling needed, with the exchangers less loaded."""
-    swept = float(np.asarray(plant.machine.swept_volume_m3_per_s))
-    speed = same.swept_volume_m3_per_s / swept
+    machine, needed = _with_films(plant.machine, factors), plant.needed_W
+    swept = float(np.asarray(machine.swept_volume_m3_per_s))
+    just = _solved(plant, behaviour, machine, needed)
+    speed = just.swept_volume_m3_per_s / swept
     lowest = plant.case.compressor.lowest_speed or speed
     if speed >= lowest:
-        return Operation("variable", plant.needed_W, 0.0, 1.0, speed, same.power_W)
-    slow = replace(_with_films(plant.machine, factors), swept_volume_m3_per_s=lowest * swept)
-    found = balance(behaviour, slow, *plant.start_K)
+        return Operation("variable", needed, 0.0, 1.0, speed, just.power_W)
+    slow = _solved(plant, behaviour, replace(machine, swept_volume_m3_per_s=lowest * swept))
+    run_time = needed / slow.cooling_W
+    return Operation("variable", needed, 0.0, run_time, lowest, slow.power_W * run_time)
+
+
+def _solved(
+    plant: ExistingPlant, behaviour: Fluid, machine: Machine, cooling_W: float | None = None, warmer_K: float = 0.0
+) -> Performance[float]:
+    """Return what a machine does in one condition, or raise NoSolutionError with the reason."""
+    evaporating, condensing = plant.start_K
+    found = balance(behaviour, machine, evaporating, condensing + warmer_K, cooling_W)
     if not found.is_solved:
-        raise NoSolutionError(f"{behaviour.designation} in the plant as installed, at its lowest speed: {found.reason}")
+        raise NoSolutionError(f"{behaviour.designation} in the plant as installed: {found.reason}")
     cooling = found.mass_flow_kg_per_s * found.cycle.refrigerating_effect_J_per_kg
-    run_time = plant.needed_W / float(cooling)
-    power = float(found.mass_flow_kg_per_s * found.cycle.work_J_per_kg)
-    return Operation("variable", plant.needed_W, 0.0, run_time, lowest, power * run_time)
+    return as_numbers(performance(found.cycle, cooling))

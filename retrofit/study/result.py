@@ -92,8 +92,8 @@ class Installed:
 
     Attributes:
         full: Running at full, pressures where they settle.
-        same_cooling: Delivering today's cooling with whatever displacement that takes: what a COP may be
-            compared at, since a plant that cools less loads its exchangers less.
+        same_cooling: Delivering today's cooling at full with whatever displacement that takes: what a COP may
+            be compared at, since a plant that cools less loads its exchangers less.
         operation: How the plant meets the cooling it has to deliver.
         is_covered: Whether the compressor's data reach to this point.
         film_factors: Factors on the conductance of evaporator and condenser.
