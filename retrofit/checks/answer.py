@@ -10,16 +10,6 @@ from retrofit.checks.thresholds import model_band
 from retrofit.study import Comparison, Entry
 from retrofit.units import UnitSystem, listed
 
-NOT_CHECKED = (
-    "what the heat exchangers do: evaporating and condensing temperatures are held, not found from air or water",
-    "motor current, expansion valves, distributors, pipes, oil return, receiver, relief valves and seals",
-    "standstill pressure at the highest ambient temperature, and the hottest day beyond the temperatures of the case",
-    "charge against room volume, ventilation, detection and electrical equipment",
-    "law, listings and permits at the place of the plant, now and over its remaining life",
-    "a year of operation: energy, emissions and cost",
-)
-
-
 VERDICT_WORDS = {
     "suits": ("suits", "suit"),
     "suits with work": ("suits with work", "suit with work"),
@@ -70,11 +60,6 @@ class Answer:
         return (*(matter.text for matter in self.matters), *self.remarks)
 
 
-def not_checked() -> tuple[str, ...]:
-    """Return what this comparison does not look at, for the reader to have looked at."""
-    return NOT_CHECKED
-
-
 def answer(comparison: Comparison, units: UnitSystem) -> Answer:
     """Return question and answer in plain words.
 
@@ -100,12 +85,15 @@ def answer(comparison: Comparison, units: UnitSystem) -> Answer:
 
 
 def _matters(comparison: Comparison, solved: Sequence[Entry], units: UnitSystem) -> tuple[Matter, ...]:
-    return (
+    found = (
         _capacity(comparison, solved),
+        _installed(solved, units),
         _discharge(comparison, solved, units),
         _pressure(comparison, solved, units),
         _cop(solved),
+        _hardware(comparison, solved),
     )
+    return tuple(matter for matter in found if matter.groups)
 
 
 def _headline(comparison: Comparison) -> str:
@@ -122,22 +110,105 @@ def _headline(comparison: Comparison) -> str:
 
 
 def _capacity(comparison: Comparison, solved: Sequence[Entry]) -> Matter:
+    """Return the matter of cooling: on the plant as installed where that could be computed, and saying which."""
     old, band = comparison.existing.refrigerant.designation, model_band()["capacity"].value
     needed = capacity_needed_W(comparison)
+    is_mixed = len({entry.plant is None for entry in solved}) > 1
 
     def share(entry: Entry) -> float:
+        if entry.plant is not None:
+            return entry.plant.full.cooling_W / entry.plant.operation.cooling_needed_W
         assert entry.compressor is not None
         return entry.compressor.cooling_W / needed
 
     def change(entry: Entry) -> str:
-        return f"{entry.relative['capacity'] - 1.0:+.0%}".replace("-", "−")
+        name = "capacity" if entry.plant is None else "plant_capacity"
+        return _percent(entry.relative[name]) + (", same compressor" if is_mixed and entry.plant is None else "")
 
     groups = (
         (lambda e: share(e) >= 1.0 + band, f"more than needed, beyond the ±{band:.0%} of the model"),
         (lambda e: 1.0 - band < share(e) < 1.0 + band, f"as much as needed, within the ±{band:.0%} of the model"),
         (lambda e: share(e) <= 1.0 - band, f"less than needed, beyond the ±{band:.0%} of the model"),
     )
-    return Matter(f"Cooling with the existing compressor, against {old}", _grouped(solved, groups, change))
+    basis = (
+        "Cooling with the existing compressor"
+        if all(entry.plant is None for entry in solved)
+        else "Cooling with the existing compressor and heat exchangers (same plant)"
+    )
+    return Matter(f"{basis}, against {old}", _grouped(solved, groups, change))
+
+
+def _percent(ratio: float) -> str:
+    """Return a ratio to today as a change in whole percent; none has no sign."""
+    text = f"{ratio - 1.0:+.0%}".replace("-", "−")
+    return "0%" if text[1:] == "0%" else text
+
+
+def _installed(solved: Sequence[Entry], units: UnitSystem) -> Matter:
+    """Return how the plant as installed meets the cooling it has to deliver; no groups without that basis."""
+    operations = [entry.plant.operation for entry in solved if entry.plant is not None]
+    if not operations:
+        return Matter("The plant as installed", ())
+    needed, band = operations[0].cooling_needed_W, model_band()["capacity"].value
+
+    def lacks(entry: Entry) -> float:
+        return entry.plant.operation.unmet_W / needed if entry.plant else -1.0
+
+    groups = (
+        (lambda e: lacks(e) == 0.0, "meets it"),
+        (lambda e: 0.0 < lacks(e) <= band, f"lacks less than the ±{band:.0%} of the model, running all the time"),
+        (lambda e: lacks(e) > band, "lacks cooling, running all the time"),
+        (lambda e: lacks(e) < 0.0, "not computed on this basis"),
+    )
+    delivered = units.with_unit("cooling", needed)
+    about = f"The plant as installed, {delivered} to deliver; COP against today at the same cooling"
+    return Matter(about, _grouped(solved, groups, _running))
+
+
+def _running(entry: Entry) -> str:
+    """Return how a refrigerant runs in the plant as installed, and its COP there; empty without that basis."""
+    if entry.plant is None:
+        return ""
+    run, cop, band = entry.plant.operation, entry.relative["plant_cop_same_cooling"], model_band()["cop"].value
+    near = "≈\N{NO-BREAK SPACE}" if abs(cop - 1.0) <= band else ""
+    share = run.unmet_W / run.cooling_needed_W
+    parts = [f"at {run.speed_fraction:.0%} speed"] if run.speed_fraction < 1.0 else []
+    if run.run_time_fraction < 1.0 or not parts:
+        parts.insert(0, f"{run.run_time_fraction:.0%} of the time")
+    amount = " ".join(parts)
+    if share > 0.0:
+        amount = f"−{share:.0%}" if share >= 0.01 else "less than 1%"
+    return f"{amount}, COP {near}{_percent(cop)}"
+
+
+def _hardware(comparison: Comparison, solved: Sequence[Entry]) -> Matter:
+    """Return what has to be done to the hardware: candidates that need the same stand together.
+
+    What today's refrigerant would need just as well is told of it, and not of the candidates again.
+    """
+    today = comparison.existing
+    groups: dict[str, list[str]] = {}
+    for verdict, deed in (("replace", "replace"), ("adjust", "adjust or prove")):
+        already = _with_verdict(today, verdict)
+        if already:
+            groups[f"{deed}, already today: {_short(already)}"] = [today.refrigerant.designation]
+        for entry in solved:
+            if names := [name for name in _with_verdict(entry, verdict) if name not in already]:
+                groups.setdefault(f"{deed} {_short(names)}", []).append(entry.refrigerant.designation)
+    for entry in solved:
+        if count := len(_with_verdict(entry, "unknown")):
+            words = f"{count} component{'s' if count > 1 else ''} not known for lack of data"
+            groups.setdefault(words, []).append(entry.refrigerant.designation)
+    return Matter("Hardware", tuple((words, tuple(names)) for words, names in groups.items()))
+
+
+def _with_verdict(entry: Entry, verdict: str) -> list[str]:
+    return [item.name for item in entry.hardware if item.verdict == verdict]
+
+
+def _short(components: Sequence[str]) -> str:
+    """Return names of components as running text: each with a small first letter."""
+    return "; ".join(f"{name[:1].lower()}{name[1:]}" for name in components)
 
 
 def _discharge(comparison: Comparison, solved: Sequence[Entry], units: UnitSystem) -> Matter:
@@ -188,7 +259,7 @@ def _cop(solved: Sequence[Entry]) -> Matter:
     band = model_band()["cop"].value
 
     def change(entry: Entry) -> str:
-        return f"{entry.relative['cop'] - 1.0:+.0%}".replace("-", "−")
+        return _percent(entry.relative["cop"])
 
     def ratio(entry: Entry) -> float:
         return entry.relative["cop"]
@@ -224,8 +295,9 @@ def _grouped(
     entries: Sequence[Entry], groups: Sequence[Group], amount: Callable[[Entry], str]
 ) -> tuple[tuple[str, tuple[str, ...]], ...]:
     """Return the groups that have a member: their words, and each member with its amount."""
-    found = (
-        (words, tuple(f"{e.refrigerant.designation} ({amount(e)})" for e in entries if belongs(e)))
-        for belongs, words in groups
-    )
+    found = ((words, tuple(_named(e, amount(e)) for e in entries if belongs(e))) for belongs, words in groups)
     return tuple((words, names) for words, names in found if names)
+
+
+def _named(entry: Entry, amount: str) -> str:
+    return entry.refrigerant.designation + (f" ({amount})" if amount else "")

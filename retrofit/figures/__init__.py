@@ -2,7 +2,7 @@
 
 from retrofit.figures.cycles import cycle_chart, overlay_charts
 from retrofit.figures.drawing import Drawing
-from retrofit.figures.rows import change_chart, discharge_chart, pressure_chart
+from retrofit.figures.rows import change_charts, discharge_chart, pressure_chart
 from retrofit.figures.style import COLOURS, INK, Mark, mark_of
 
 __all__ = [
@@ -10,7 +10,7 @@ __all__ = [
     "INK",
     "Drawing",
     "Mark",
-    "change_chart",
+    "change_charts",
     "cycle_chart",
     "discharge_chart",
     "mark_of",

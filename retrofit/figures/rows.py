@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from dataclasses import dataclass
 from typing import Any
 
 from retrofit.checks import model_band, threshold
@@ -103,48 +104,94 @@ def discharge_chart(comparison: Comparison, units: UnitSystem) -> Drawing:
     return Drawing("discharge", svg, caption, described)
 
 
-def change_chart(comparison: Comparison) -> Drawing:
-    """Draw capacity with the same compressor, and COP, against today, with the band of the model.
+@dataclass(frozen=True)
+class Panel:
+    """One ratio to today's refrigerant: its name in the result, the band it is held against, and its axis."""
+
+    ratio: str
+    band: str
+    label: str
+
+
+SAME_COMPRESSOR = Panel("capacity", "capacity", "Cooling, same compressor, against today [%]")
+SAME_PLANT = Panel("plant_capacity", "capacity", "Cooling, same plant, against today [%]")
+SAME_DUTY = Panel("cop", "cop", "COP, same duty, against today [%]")
+SAME_COOLING = Panel("plant_cop_same_cooling", "cop", "COP, same plant and cooling, against today [%]")
+INSIDE = "Inside the grey band the difference is smaller than what the model can tell: no meaningful difference."
+
+
+def change_charts(comparison: Comparison) -> tuple[Drawing, ...]:
+    """Draw cooling and COP against today with the band of the model, on every basis that there is.
 
     Args:
         comparison: The result.
-    Returns: The chart; without the existing refrigerant's numbers its rows stay empty.
+    Returns: One chart of cooling and COP; with the basis same plant one of each. Without the existing
+        refrigerant's numbers their rows stay empty.
     """
-    panels = (
-        ("capacity", model_band()["capacity"].value, "Cooling, same compressor, against today [%]"),
-        ("cop", model_band()["cop"].value, "COP against today [%]"),
+    if not any(entry.plant for entry in comparison.entries):
+        caption = f"Cooling with the existing compressor, and COP, against today's refrigerant. {INSIDE}"
+        return (
+            _changes(comparison, "change", "Capacity and COP against today", (SAME_COMPRESSOR, SAME_DUTY), caption),
+        )
+    cooling = (
+        "Cooling against today's refrigerant: with the existing compressor at the plant's temperatures (left), and "
+        f"with compressor and exchangers as installed, pressures floating (right). {INSIDE}"
     )
+    cop = (
+        "COP against today's refrigerant: at the plant's temperatures (left), and with compressor and exchangers as "
+        f"installed, at the same cooling (right). {INSIDE}"
+    )
+    return (
+        _changes(comparison, "change", "Cooling against today", (SAME_COMPRESSOR, SAME_PLANT), cooling),
+        _changes(comparison, "change-cop", "COP against today", (SAME_DUTY, SAME_COOLING), cop),
+    )
+
+
+def _changes(comparison: Comparison, name: str, title: str, panels: tuple[Panel, Panel], caption: str) -> Drawing:
+    bands = [100.0 * model_band()[panel.band].value for panel in panels]
     with canvas(_height(comparison), *MARGINS_IN) as figure:
         both = figure.subplots(1, 2, sharey=True, gridspec_kw={"wspace": 0.1})
-        for axes, (name, band, label) in zip(both, panels, strict=True):
-            axes.axvspan(-100 * band, 100 * band, color=INK, alpha=0.09, linewidth=0)
-            axes.axvline(0.0, color=INK, linewidth=THIN)
-            values = [-130 * band, 130 * band]
-            for place, entry in _rows(axes, comparison):
-                if name in entry.relative:
-                    mark, value = mark_of(place), 100 * (entry.relative[name] - 1.0)
-                    values.append(value)
-                    axes.plot([value], [place], mark.marker, color=mark.colour, markersize=6)
-                    _value(axes, value, place, format_number(value, 0, signed=True), -1 if value < 0 else 1)
+        found = [
+            [-1.3 * band, 1.3 * band, *_panel(axes, comparison, panel, band)]
+            for axes, panel, band in zip(both, panels, bands, strict=True)
+        ]
+        if panels[0].band == panels[1].band:  # the same thing on two bases: on one scale
+            found = [found[0] + found[1]] * 2
+        for axes, values in zip(both, found, strict=True):
             _wide(axes, values, 0.16)
-            axes.set_xlabel(label)
             axes.xaxis.get_major_locator().set_params(integer=True, nbins=7)
-            text = f"±{100 * band:.0f} %: no meaningful difference"
-            axes.annotate(text, (0.0, 1.0), (0, 3), xycoords=("data", "axes fraction"), textcoords="offset points",
-                          ha="center", va="bottom", fontsize=SMALL_PT)  # fmt: skip
-        words = _words(comparison, _changes)
-        svg = to_svg(figure, "change", "Capacity and COP against today", f"In %, capacity and COP: {words}")
-    caption = (
-        "Cooling with the existing compressor, and COP, against today's refrigerant. Inside the grey band the "
-        "difference is smaller than what the model can tell: no meaningful difference."
-    )
-    return Drawing("change", svg, caption, words)
+        words = _words(comparison, lambda entry: _change_words(entry, panels))
+        described = f"In %, {panels[0].label.split(' [')[0]} and {panels[1].label.split(' [')[0]}: {words}"
+        svg = to_svg(figure, name, title, described)
+    return Drawing(name, svg, caption, words)
 
 
-def _changes(entry: Entry) -> str:
+def _panel(axes: Any, comparison: Comparison, panel: Panel, band: float) -> list[float]:
+    """Draw one panel and return the values in it. [%]"""
+    axes.axvspan(-band, band, color=INK, alpha=0.09, linewidth=0)
+    axes.axvline(0.0, color=INK, linewidth=THIN)
+    values = []
+    for place, entry in _rows(axes, comparison):
+        if panel.ratio in entry.relative:
+            mark, value = mark_of(place), 100 * (entry.relative[panel.ratio] - 1.0)
+            values.append(value)
+            axes.plot([value], [place], mark.marker, color=mark.colour, markersize=6)
+            _value(axes, value, place, format_number(value, 0, signed=True), -1 if value < 0 else 1)
+        elif entry.duty is not None:
+            _not_computed(axes, place)
+    axes.set_xlabel(panel.label)
+    text = f"±{band:.0f} %: no meaningful difference"
+    axes.annotate(text, (0.0, 1.0), (0, 3), xycoords=("data", "axes fraction"), textcoords="offset points",
+                  ha="center", va="bottom", fontsize=SMALL_PT)  # fmt: skip
+    return values
+
+
+def _change_words(entry: Entry, panels: tuple[Panel, Panel]) -> str:
     return " and ".join(
-        format_number(100 * (entry.relative[name] - 1.0), 0, signed=True) if name in entry.relative else "not known"
-        for name in ("capacity", "cop")
+        format_number(100 * (entry.relative[panel.ratio] - 1.0), 0, signed=True)
+        if panel.ratio in entry.relative
+        else "not known"
+        for panel in panels
     )
 
 
@@ -169,9 +216,13 @@ def _rows(axes: Any, comparison: Comparison) -> list[tuple[int, Entry]]:
     for place, entry in enumerate(entries):
         axes.axhline(place, color=INK, linewidth=HAIRLINE, alpha=0.18)
         if entry.duty is None:
-            axes.annotate("not computed", (0.02, place), xycoords=("axes fraction", "data"), va="center",
-                          fontsize=SMALL_PT, style="italic")  # fmt: skip
+            _not_computed(axes, place)
     return list(enumerate(entries))
+
+
+def _not_computed(axes: Any, place: int) -> None:
+    axes.annotate("not computed", (0.02, place), xycoords=("axes fraction", "data"), va="center",
+                  fontsize=SMALL_PT, style="italic")  # fmt: skip
 
 
 def _value(axes: Any, x: float, y: float, text: str, side: int) -> None:

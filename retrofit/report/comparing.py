@@ -5,12 +5,14 @@ from __future__ import annotations
 from collections.abc import Iterable
 
 from retrofit.checks import model_band
+from retrofit.report.plant import plant_groups
+from retrofit.report.rows import change_row, near, quantity_row
 from retrofit.report.table import Group, Notes, Row, Table, number_row, word_row
 from retrofit.report.values import gwp_rows, value_row
 from retrofit.study import Comparison, Entry
-from retrofit.units import MISSING, UnitSystem, format_number
+from retrofit.units import UnitSystem
 
-PERCENT = "%"
+SAME = "the same at same duty and same compressor"
 
 
 def convention(comparison: Comparison) -> str:
@@ -36,15 +38,14 @@ def comparison_table(comparison: Comparison, units: UnitSystem) -> Table:
     entries = comparison.entries
     groups = (
         Group("is", "What each refrigerant is", _identity(entries, units, notes)),
-        Group(
-            "pressures", "Pressures at the plant's temperatures; the same on both bases", _pressures(comparison, units)
-        ),
-        Group("temperatures", "Temperatures; the same on both bases", _temperatures(comparison, units)),
-        Group("efficiency", "Each kilowatt and each cubic metre; the same on both bases", _specific(comparison, units)),
+        Group("pressures", f"Pressures at the plant's temperatures; {SAME}", _pressures(comparison, units)),
+        Group("temperatures", f"Temperatures; {SAME}", _temperatures(comparison, units)),
+        Group("efficiency", f"Each kilowatt and each cubic metre; {SAME}", _specific(comparison, units)),
         Group("duty", duty_heading(comparison, units), _duty(comparison, units)),
         Group("compressor", compressor_heading(comparison, units), _compressor(comparison, units)),
+        *plant_groups(comparison, units, notes),
     )
-    caption = "Comparison on two bases: same duty and same compressor"
+    caption = "Comparison on three bases: same duty, same compressor and same plant"
     _reasons(entries, notes)
     return Table("comparison", caption, convention(comparison), columns(entries), groups, notes.listed())
 
@@ -64,18 +65,6 @@ def compressor_heading(comparison: Comparison, units: UnitSystem) -> str:
     swept = units.with_unit("volume flow", comparison.swept_volume_m3_per_s)
     origin = "given in the case" if comparison.swept_volume_from == "case" else "not given: what today's duty needs"
     return f"Basis: same compressor, swept volume {swept} ({origin})"
-
-
-def change_text(ratio: float | None, band: float) -> str:
-    """Return a ratio to today as a change in percent; a change inside the band begins with the sign ≈."""
-    if ratio is None or ratio == 1.0:  # today against itself is no finding
-        return MISSING
-    text = format_number(100.0 * (ratio - 1.0), 0, signed=True)
-    return _near(text) if abs(ratio - 1.0) <= band else text
-
-
-def _near(text: str) -> str:
-    return f"≈\N{NARROW NO-BREAK SPACE}{text}"
 
 
 def _reasons(entries: tuple[Entry, ...], notes: Notes) -> None:
@@ -100,11 +89,11 @@ def _pressures(comparison: Comparison, units: UnitSystem) -> tuple[Row, ...]:
         values = _values(comparison, "duty", f"{name}_Pa")
         gauge = [None if value is None else value - ambient for value in values]
         rows += [
-            _quantity(f"{label} pressure, absolute", "pressure", values, units),
-            _quantity(f"{label} pressure, gauge", "gauge pressure", gauge, units),
-            _change(f"{label} pressure against today", comparison, name, "pressure"),
+            quantity_row(f"{label} pressure, absolute", "pressure", values, units),
+            quantity_row(f"{label} pressure, gauge", "gauge pressure", gauge, units),
+            change_row(f"{label} pressure against today", comparison, name, "pressure"),
         ]
-    rows.append(_quantity("Pressure ratio", "ratio", _values(comparison, "duty", "pressure_ratio"), units))
+    rows.append(quantity_row("Pressure ratio", "ratio", _values(comparison, "duty", "pressure_ratio"), units))
     return tuple(rows)
 
 
@@ -120,7 +109,7 @@ def _temperatures(comparison: Comparison, units: UnitSystem) -> tuple[Row, ...]:
         ("Glide in the condenser", "temperature difference", "glide_cond_K"),
         ("Discharge temperature", "temperature", "T_discharge_K"),
     )
-    rows = [_quantity(label, kind, _values(comparison, "duty", name), units) for label, kind, name in names]
+    rows = [quantity_row(label, kind, _values(comparison, "duty", name), units) for label, kind, name in names]
     return (*rows, _discharge_change(comparison, units))
 
 
@@ -130,7 +119,7 @@ def _discharge_change(comparison: Comparison, units: UnitSystem) -> Row:
     for entry in comparison.entries:
         rise = None if entry is comparison.existing else entry.T_discharge_difference_K
         text = units.text("temperature difference", rise, decimals=0, signed=True)
-        texts.append(_near(text) if rise is not None and abs(rise) <= band else text)
+        texts.append(near(text) if rise is not None and abs(rise) <= band else text)
     return number_row("Discharge against today", units.label("temperature difference"), texts)
 
 
@@ -140,8 +129,8 @@ def _specific(comparison: Comparison, units: UnitSystem) -> tuple[Row, ...]:
         ("Volumetric capacity", "volumetric capacity", "volumetric_capacity_J_per_m3"),
         ("COP, cooling over compressor power", "ratio", "cop"),
     )
-    rows = [_quantity(label, kind, _values(comparison, "duty", name), units) for label, kind, name in names]
-    return (*rows, _change("COP against today", comparison, "cop", "cop"))
+    rows = [quantity_row(label, kind, _values(comparison, "duty", name), units) for label, kind, name in names]
+    return (*rows, change_row("COP against today", comparison, "cop", "cop"))
 
 
 def _duty(comparison: Comparison, units: UnitSystem) -> tuple[Row, ...]:
@@ -151,9 +140,9 @@ def _duty(comparison: Comparison, units: UnitSystem) -> tuple[Row, ...]:
         ("Compressor power", "power", "power_W"),
         ("Heat rejected", "heat flow", "heat_rejected_W"),
     )
-    rows = [_quantity(label, kind, _values(comparison, "duty", name), units) for label, kind, name in names]
-    rows.insert(2, _change("Displacement against today", comparison, "swept_volume_same_duty", "capacity"))
-    rows.insert(4, _change("Power against today", comparison, "power_same_duty", "cop"))
+    rows = [quantity_row(label, kind, _values(comparison, "duty", name), units) for label, kind, name in names]
+    rows.insert(2, change_row("Displacement against today", comparison, "swept_volume_same_duty", "capacity"))
+    rows.insert(4, change_row("Power against today", comparison, "power_same_duty", "cop"))
     return tuple(rows)
 
 
@@ -164,30 +153,12 @@ def _compressor(comparison: Comparison, units: UnitSystem) -> tuple[Row, ...]:
         ("Heat rejected", "heat flow", "heat_rejected_W"),
         ("Mass flow", "mass flow", "mass_flow_kg_per_s"),
     )
-    rows = [_quantity(label, kind, _values(comparison, "compressor", name), units) for label, kind, name in names]
-    rows.insert(1, _change("Cooling against today", comparison, "capacity", "capacity"))
-    rows.insert(3, _change("Power against today", comparison, "power", "capacity"))
+    rows = [quantity_row(label, kind, _values(comparison, "compressor", name), units) for label, kind, name in names]
+    rows.insert(1, change_row("Cooling against today", comparison, "capacity", "capacity"))
+    rows.insert(3, change_row("Power against today", comparison, "power", "capacity"))
     return tuple(rows)
 
 
 def _values(comparison: Comparison, basis: str, name: str) -> list[float | None]:
     found = [getattr(entry, basis) for entry in comparison.entries]
     return [None if item is None else float(getattr(item, name)) for item in found]
-
-
-def _quantity(label: str, kind: str, values: list[float | None], units: UnitSystem) -> Row:
-    if kind == "heat flow":  # in Btu/h its usual form has six digits, of which the model knows two
-        return number_row(label, units.label(kind), [_four_digits(kind, value, units) for value in values])
-    return number_row(label, units.label(kind), units.column(kind, values))
-
-
-def _four_digits(kind: str, value: float | None, units: UnitSystem) -> str:
-    if value is None:
-        return MISSING
-    number = float(f"{float(units.number(kind, value)):.4g}")
-    return format_number(number, 0 if abs(number) >= 1000.0 else 1)
-
-
-def _change(label: str, comparison: Comparison, ratio: str, band: str) -> Row:
-    width = model_band()[band].value
-    return number_row(label, PERCENT, [change_text(entry.relative.get(ratio), width) for entry in comparison.entries])

@@ -1,31 +1,28 @@
-"""Every input of a comparison: what the case gives, and each default taken with its reason."""
+"""Every input of a comparison: what the case gives, each default taken with its reason, and what was left out."""
 
 from __future__ import annotations
 
 from dataclasses import dataclass
 
-from retrofit.case import Case
-from retrofit.case.model import TABLES
+from retrofit.case import Case, meaning, quantity
+from retrofit.case.model import FIELDS, TABLES
+from retrofit.study import Comparison
 from retrofit.units import UnitSystem
 
-# The end of a field's name tells what it counts; the longest match first.
-_KINDS = (
-    ("superheat_K", "temperature difference"),
-    ("subcooling_K", "temperature difference"),
-    ("_m3_per_s", "volume flow"),
-    ("efficiency", "fraction"),
-    ("_kg", "mass"),
-    ("_Pa", "pressure"),
-    ("_K", "temperature"),
-    ("_W", "cooling"),
-    ("_m", "length"),
-)
-FIXED = (
-    "The compressor's isentropic and volumetric efficiency are the same for every refrigerant and pressure ratio.",
-    "No pressure drop in pipes and exchangers, no heat loss of the compressor, one stage of compression.",
-    "Evaporating and condensing temperatures are held as the convention says; the exchangers are not calculated.",
-    "A blend circulates with the composition of its designation.",
-)
+# Keys that another one stands for: what is not needed is not missing.
+INSTEAD = {
+    "compressor.efficiency_points": ("compressor.polynomial",),
+    "compressor.polynomial": ("compressor.efficiency_points",),
+    "compressor.polynomial.capacity": ("compressor.polynomial.mass_flow",),
+    "compressor.polynomial.mass_flow": ("compressor.polynomial.capacity",),
+    "compressor.polynomial.superheat": ("compressor.polynomial.return_gas",),
+    "compressor.polynomial.return_gas": ("compressor.polynomial.superheat",),
+    **{
+        f"{exchanger}.{key}": (f"{exchanger}.{other}",)
+        for exchanger in ("evaporator", "condenser")
+        for key, other in (("flow", "outlet"), ("specific_heat", "outlet"), ("outlet", "flow"))
+    },
+}
 
 
 @dataclass(frozen=True)
@@ -48,6 +45,14 @@ class Taken:
     why: str
 
 
+@dataclass(frozen=True)
+class LeftOut:
+    """The keys that one table of the file leaves out, and no default stands for."""
+
+    table: str
+    keys: tuple[str, ...]
+
+
 def inputs(case: Case, units: UnitSystem) -> tuple[Input, ...]:
     """Return what the case file gives, in its own words and in the reader's units.
 
@@ -55,51 +60,84 @@ def inputs(case: Case, units: UnitSystem) -> tuple[Input, ...]:
         case: The case.
         units: The reader's units.
     """
-    found = []
-    for key, written in case.given.items():
-        if "." in key:
-            table, _, alias = key.partition(".")
-            found.append(Input(key, _meaning(table, alias), written, _used(case, table, alias, units)))
-    return tuple(found)
+    return tuple(
+        Input(key, meaning(key), written, _used(case, key, units)) for key, written in case.given.items() if "." in key
+    )
 
 
 def defaults(case: Case, units: UnitSystem) -> tuple[Taken, ...]:
     """Return every default that was taken, with its reason."""
-    found = []
-    for default in case.defaults:
-        table, _, alias = default.key.partition(".")
-        used = _used(case, table, alias, units) or default.shown_text
-        found.append(Taken(default.key, _meaning(table, alias), used, default.why))
-    return tuple(found)
-
-
-def missing(case: Case) -> tuple[str, ...]:
-    """Return the meaning of every key that a table of the file leaves out and no default stands for."""
-    taken = {default.key for default in case.defaults} | set(case.given)
     return tuple(
-        _meaning(table, alias)
-        for table in TABLES
-        if getattr(case, table, None) is not None
-        for alias in _names(table)
-        if f"{table}.{alias}" not in taken
+        Taken(item.key, meaning(item.key), _used(case, item.key, units) or item.shown_text, item.why)
+        for item in case.defaults
     )
 
 
-def _names(table: str) -> dict[str, str]:
-    """Return the name of the field behind each key of a table; none for a table that the case model does not know."""
-    model = TABLES.get(table)
-    return {} if model is None else {field.alias or name: name for name, field in model.model_fields.items()}
+def missing(case: Case) -> tuple[LeftOut, ...]:
+    """Return the keys that each table of the file leaves out and no default stands for.
+
+    Of a table that the file has not at all only its name is told: with no keys.
+    """
+    taken = {default.key for default in case.defaults} | set(case.given)
+    found = []
+    for table in TABLES:
+        if _at(case, table) is None:
+            found += [LeftOut(table, ())] if "." not in table else []
+        elif keys := tuple(key for key in _keys(table) if _is_open(f"{table}.{key}", taken)):
+            found.append(LeftOut(table, keys))
+    return tuple(item for item in found if item.table != "thresholds")
 
 
-def _meaning(table: str, alias: str) -> str:
-    name = _names(table).get(alias)
-    return alias if name is None else TABLES[table].model_fields[name].description or alias
+def _keys(table: str) -> list[str]:
+    """Return the keys of a table, of tables within it the names."""
+    return [key.removeprefix(f"{table}.") for key in (*FIELDS, *TABLES) if key.rpartition(".")[0] == table]
 
 
-def _used(case: Case, table: str, alias: str, units: UnitSystem) -> str:
-    name = _names(table).get(alias, "")
-    value = getattr(getattr(case, table, None), name, None) if name else None
-    kind = next((kind for ending, kind in _KINDS if name.endswith(ending)), "")
-    if not kind or not isinstance(value, int | float):
+def _is_open(key: str, taken: set[str]) -> bool:
+    stands = {taken_key for taken_key in taken if taken_key == key or taken_key.startswith(f"{key}.")}
+    return not stands and not any(
+        other in taken or any(name.startswith(f"{other}.") for name in taken) for other in INSTEAD.get(key, ())
+    )
+
+
+def _at(case: Case, table: str) -> object:
+    found: object = case
+    for part in table.split("."):
+        found = getattr(found, part, None)
+    return found
+
+
+def _used(case: Case, key: str, units: UnitSystem) -> str:
+    found = quantity(case, key)
+    if found is None:
         return ""
+    kind, value = found
     return units.with_unit(kind, value, decimals=1 if kind == "fraction" else None)
+
+
+def fixed(comparison: Comparison) -> tuple[str, ...]:
+    """Return what is built into the calculation of this comparison, in sentences.
+
+    Args:
+        comparison: The result.
+    """
+    compressor = comparison.case.compressor
+    has_data = compressor.efficiency_points is not None or compressor.polynomial is not None
+    has_plant = any(entry.plant for entry in comparison.entries)
+    return (
+        "The compressor's isentropic and volumetric efficiency follow from the pressure ratio, the same curve for "
+        "every refrigerant."
+        if has_data
+        else "The compressor's isentropic and volumetric efficiency are the same for every refrigerant and pressure "
+        "ratio.",
+        "One stage of compression. Pressure drops and heat lost by the compressor only as far as the case gives them.",
+        "On the bases same duty and same compressor, evaporating and condensing temperatures are held as the "
+        "convention says"
+        + (
+            "; on the basis same plant they are found. Its exchangers have the conductance that today's point gives "
+            "them, times the factor of the case, whatever the flow of refrigerant."
+            if has_plant
+            else "; the exchangers are not calculated."
+        ),
+        "A blend circulates with the composition of its designation.",
+    )

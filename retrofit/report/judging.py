@@ -90,7 +90,7 @@ def threshold_sources(comparison: Comparison) -> tuple[str, ...]:
     found: dict[str, list[str]] = {}
     for entry in comparison.entries:
         for finding in entry.findings:
-            titles = found.setdefault(_source(finding), [])
+            titles = found.setdefault(source_title(finding.source), [])
             if (title := spelled(finding.title)) not in titles:
                 titles.append(title)
     return tuple(f"{listed(titles, 'and')}: {origin}" for origin, titles in found.items() if origin)
@@ -105,15 +105,19 @@ def _names(comparison: Comparison) -> dict[Subject, list[str]]:
 
 
 def _subject(finding: Finding) -> Subject:
-    return finding.level, spelled(finding.title), spelled(finding.advice), _source(finding)
+    return finding.level, spelled(finding.title), spelled(finding.advice), source_title(finding.source)
 
 
-def _source(finding: Finding) -> str:
-    """Return where the threshold comes from; a key of the bibliography as the title it stands for."""
+def source_title(origin: str) -> str:
+    """Return where a threshold comes from; a key of the bibliography as the title it stands for.
+
+    Args:
+        origin: A key, or words. [-]
+    """
     try:
-        return source(finding.source).title
+        return source(origin).title
     except KeyError:
-        return finding.source
+        return origin
 
 
 def _judged(place: int, entry: Entry, numbers: Mapping[Subject, int]) -> Judged:

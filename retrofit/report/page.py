@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from dataclasses import dataclass
 from datetime import datetime
 from pathlib import PurePath
@@ -12,9 +13,12 @@ from retrofit.case.values import is_hidden
 from retrofit.checks import answer, model_band, not_checked
 from retrofit.report.cautioning import DEFERENCE, CautionGroup, caution_groups
 from retrofit.report.comparing import comparison_table, convention
+from retrofit.report.found import AsFound, as_found
 from retrofit.report.guard import POLICY
-from retrofit.report.inputs import FIXED, Input, Taken, defaults, inputs, missing
+from retrofit.report.hardware import Hardware, hardware
+from retrofit.report.inputs import Input, LeftOut, Taken, defaults, fixed, inputs, missing
 from retrofit.report.judging import Judged, Shared, judged, spelled, threshold_sources
+from retrofit.report.plant import WHY_SAME_COOLING, has_plant
 from retrofit.report.states import Portrait, enthalpy_note, portraits
 from retrofit.report.table import Table
 from retrofit.report.values import UsedSource, environment_table, used_sources
@@ -22,6 +26,22 @@ from retrofit.study import Comparison, Entry
 from retrofit.units import MISSING, UnitSystem
 
 SYSTEM_WORDS = {"si": "metric units", "ip": "inch-pound units"}
+# Sections in their order, by id; the one on the plant as found only if there are readings.
+SECTIONS = {
+    "answer": "Answer",
+    "cautions": "Cautions",
+    "found": "As found",
+    "comparison": "Comparison",
+    "charts": "Charts",
+    "hardware": "Hardware",
+    "findings": "Findings",
+    "states": "State points",
+    "assumptions": "Assumptions",
+    "model": "Model",
+    "limits": "Limits",
+    "terms": "Terms",
+    "sources": "Sources",
+}
 
 
 @dataclass(frozen=True)
@@ -59,6 +79,8 @@ class Page:
     made_at: str
     case_file: str
     versions: tuple[tuple[str, str], ...]
+    contents: tuple[tuple[str, str], ...]
+    number: Mapping[str, int]
     answer: Answered
     convention: str
     band: str
@@ -67,15 +89,18 @@ class Page:
     shared: tuple[Shared, ...]
     deference: str
     cautions: tuple[CautionGroup, ...]
+    found: AsFound | None
     comparison: Table
+    plant_notes: tuple[str, ...]
     environment: Table
     overlays: tuple[figures.Drawing, ...]
     charts: tuple[figures.Drawing, ...]
     enthalpy_note: str
+    hardware: Hardware
     portraits: tuple[Portrait, ...]
     inputs: tuple[Input, ...]
     defaults: tuple[Taken, ...]
-    missing: tuple[str, ...]
+    missing: tuple[LeftOut, ...]
     fixed: tuple[str, ...]
     grades: tuple[Graded, ...]
     difference_unit: str
@@ -96,6 +121,7 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
     case = comparison.case
     (existing, *candidates), shared = judged(comparison)
     solved = any(entry.duty is not None for entry in comparison.entries)
+    contents = tuple(item for item in SECTIONS.items() if item[0] != "found" or comparison.baseline is not None)
     return Page(
         policy=POLICY,
         title=plain(case.title),
@@ -106,6 +132,8 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
         made_at=_time(made_at),
         case_file=plain(PurePath(case.path).name),
         versions=tuple(comparison.versions.items()),
+        contents=contents,
+        number={name: place for place, (name, _) in enumerate(contents, start=1)},
         answer=_answer(comparison, units),
         convention=convention(comparison),
         band=band_text(units),
@@ -114,22 +142,25 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
         shared=shared,
         deference=DEFERENCE,
         cautions=caution_groups(comparison),
+        found=as_found(comparison, units),
         comparison=comparison_table(comparison, units),
+        plant_notes=(WHY_SAME_COOLING,) if has_plant(comparison) else (),
         environment=environment_table(comparison, units),
         overlays=figures.overlay_charts(comparison, units),
         charts=_charts(comparison, units) if solved else (),
         enthalpy_note=enthalpy_note(units),
+        hardware=hardware(comparison, units),
         portraits=portraits(comparison, units),
         inputs=inputs(case, units),
         defaults=defaults(case, units),
         missing=missing(case),
-        fixed=FIXED,
+        fixed=fixed(comparison),
         grades=tuple(_graded(entry, units) for entry in comparison.entries),
         difference_unit=units.label("temperature difference"),
         temperature_unit=units.label("temperature"),
         sources=used_sources(comparison),
         check_sources=threshold_sources(comparison),
-        not_checked=not_checked(),
+        not_checked=not_checked(comparison),
     )
 
 
@@ -187,7 +218,7 @@ def _charts(comparison: Comparison, units: UnitSystem) -> tuple[figures.Drawing,
     return (
         figures.pressure_chart(comparison, units),
         figures.discharge_chart(comparison, units),
-        figures.change_chart(comparison),
+        *figures.change_charts(comparison),
     )
 
 

@@ -1,19 +1,26 @@
-"""A result as text for a terminal: the answer, the cautions, the two bases, and what stands against whom."""
+"""A result as text for a terminal: the answer, the cautions, the three bases, and what stands against whom."""
 
 from __future__ import annotations
 
-from collections.abc import Callable, Sequence
+from collections.abc import Sequence
 
 from retrofit.checks import LEVELS, Answer, answer, model_band, not_checked
 from retrofit.refrigerants import GWP_BASES, Caution
 from retrofit.report.catalogue import MARK, MARK_MEANS, class_text, gwp_text
+from retrofit.report.terminal_plant import (
+    NEAR,
+    Emphasis,
+    baseline_text,
+    change_cell,
+    hardware_text,
+    plant_text,
+    row_names,
+)
 from retrofit.report.text_table import Column, paragraph, text_table
 from retrofit.study import Comparison, Entry
 from retrofit.units import UnitSystem, listed, shown
 
-Emphasis = Callable[[str], str]
 INDENT = " " * 9
-NEAR = "≈"
 CONVENTIONS = {
     "dew": "equal dew temperatures",
     "mean": "equal mean temperatures",
@@ -35,7 +42,8 @@ def comparison_text(comparison: Comparison, units: UnitSystem, columns: int, str
         _head(comparison, units, columns, strong),
         _answer(found, columns),
         *_cautions(comparison, columns, strong),
-        *_tables(comparison, units, strong),
+        baseline_text(comparison, units, columns, strong),
+        *_tables(comparison, units, columns, strong),
         _findings(comparison, columns, strong),
         _small_print(comparison, units, columns, strong),
     ]
@@ -79,22 +87,24 @@ def _cautions(comparison: Comparison, columns: int, strong: Emphasis) -> list[st
     return ["\n".join([found[0], *found[1:]])]
 
 
-def _tables(comparison: Comparison, units: UnitSystem, strong: Emphasis) -> list[str]:
+def _tables(comparison: Comparison, units: UnitSystem, columns: int, strong: Emphasis) -> list[str]:
     solved = [entry for entry in comparison.entries if entry.duty is not None]
-    tables = [_refrigerants(comparison.entries, strong)]
-    if solved:
-        tables = [_duty(comparison, solved, units, strong), _compressor(comparison, solved, units, strong), *tables]
-    return tables
+    refrigerants = _refrigerants(comparison.entries, strong)
+    if not solved:
+        return [refrigerants]
+    return [
+        _duty(comparison, solved, units, strong),
+        _compressor(comparison, solved, units, strong),
+        plant_text(comparison, units, columns, strong),
+        refrigerants,
+        hardware_text(comparison, columns, strong),
+    ]
 
 
 def convention(comparison: Comparison) -> str:
     """Return how candidates are matched and what the existing temperatures are, for a heading."""
     case = comparison.case
     return f"candidates matched at {CONVENTIONS[case.compare.match]}; today's temperatures read as {case.duty.reading}"
-
-
-def _names(entries: Sequence[Entry]) -> list[str]:
-    return [f"{entry.refrigerant.designation}{' (today)' if entry.family == 'keep' else ''}" for entry in entries]
 
 
 def _duty(comparison: Comparison, solved: Sequence[Entry], units: UnitSystem, strong: Emphasis) -> str:
@@ -117,8 +127,8 @@ def _duty(comparison: Comparison, solved: Sequence[Entry], units: UnitSystem, st
         Column("COP vs", "today"),
     ]
     cells = [units.column(kind, [getattr(entry.duty, name) for entry in solved]) for _, kind, name in kinds]
-    ratios = [_change(entry, "cop") for entry in solved]
-    rows = [list(row) for row in zip(_names(solved), *cells, ratios, strict=True)]
+    ratios = [change_cell(entry, "cop") for entry in solved]
+    rows = [list(row) for row in zip(row_names(solved), *cells, ratios, strict=True)]
     return f"{heading}\n{text_table(columns, rows)}"
 
 
@@ -139,19 +149,9 @@ def _compressor(comparison: Comparison, solved: Sequence[Entry], units: UnitSyst
         Column("Power vs", "today"),
     ]
     cells = [units.column(kind, [getattr(entry.compressor, name) for entry in solved]) for _, kind, name in kinds]
-    ratios = [[_change(entry, name) for entry in solved] for name in ("capacity", "power")]
-    rows = [list(row) for row in zip(_names(solved), *cells, *ratios, strict=True)]
+    ratios = [[change_cell(entry, name) for entry in solved] for name in ("capacity", "power")]
+    rows = [list(row) for row in zip(row_names(solved), *cells, *ratios, strict=True)]
     return f"{heading}\n{text_table(columns, rows)}"
-
-
-def _change(entry: Entry, ratio: str) -> str:
-    """Return a ratio to today as a change, with a sign before it where it lies inside the band of the model."""
-    if entry.family == "keep" or ratio not in entry.relative:
-        return "·"
-    change = entry.relative[ratio] - 1.0
-    band = model_band()["cop" if ratio == "cop" else "capacity"].value
-    near = f"{NEAR} " if abs(change) <= band else ""
-    return near + f"{change:+.1%}".replace("-", "−").replace("%", " %")
 
 
 def _refrigerants(entries: Sequence[Entry], strong: Emphasis) -> str:
@@ -170,7 +170,7 @@ def _refrigerants(entries: Sequence[Entry], strong: Emphasis) -> str:
             entry.grade.word if entry.grade else "none",
             entry.verdict,
         ]
-        for name, entry in zip(_names(entries), entries, strict=True)
+        for name, entry in zip(row_names(entries), entries, strict=True)
     ]
     heading = strong("Refrigerants: ASHRAE 34 class, GWP over 100 years by IPCC edition, grade of the model")
     table = text_table(columns, rows)
@@ -204,7 +204,7 @@ def _small_print(comparison: Comparison, units: UnitSystem, columns: int, strong
         f"±{discharge}, pressures ±{bands['pressure'].value:.0%}; {NEAR} marks a difference "
         "inside the band: no meaningful difference.",
         f"Assumed, not in the case: {listed(assumed, 'and')}." if assumed else "",
-        "Not checked: " + "; ".join(not_checked()) + ".",
+        "Not checked: " + "; ".join(not_checked(comparison)) + ".",
         "Versions: " + ", ".join(f"{name} {number}" for name, number in comparison.versions.items()) + ".",
     ]
     return "\n".join([strong("Limits"), *(paragraph(part, columns) for part in parts if part)])

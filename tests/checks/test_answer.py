@@ -5,7 +5,7 @@ from dataclasses import replace
 
 import pytest
 
-from retrofit.checks import answer, assess, model_band, not_checked
+from retrofit.checks import answer, assess, model_band
 from retrofit.study import compare
 from retrofit.units import IP, SI
 
@@ -166,11 +166,3 @@ def test_without_any_candidate_computed_the_answer_gives_the_reasons(case_of):
 
     assert found.matters == ()
     assert "R744 is not computed" in found.headline
-
-
-def test_what_is_not_checked_is_told():
-    """Room volume, law, hottest day, hardware and the year are named for the reader to have looked at."""
-    text = " ".join(not_checked())
-
-    for word in ("room volume", "law", "hottest day", "relief valves", "oil return", "emissions"):
-        assert word in text

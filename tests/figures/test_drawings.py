@@ -29,7 +29,7 @@ def drawings(result):
         *(figures.cycle_chart(result, place, SI) for place in range(3)),
         figures.pressure_chart(result, SI),
         figures.discharge_chart(result, SI),
-        figures.change_chart(result),
+        *figures.change_charts(result),
     ]
 
 

@@ -22,8 +22,8 @@ def comparison(case_of):
 
 
 def sections(text):
-    """Return the tables of a text: the lines of heading above each rule, and the rows under it."""
-    blocks = [block.split("\n") for block in text.split("\n\n") if RULE in block]
+    """Return the tables of numbers of a text: the lines of heading above each rule, and the rows under it."""
+    blocks = [block.split("\n") for block in text.split("Hardware: ")[0].split("\n\n") if RULE in block]
     for block in blocks:
         at = next(i for i, line in enumerate(block) if line.startswith(RULE))
         yield "\n".join(block[:at]), block[at + 1 :]

@@ -1,0 +1,158 @@
+"""The plant as installed as text for a terminal: the basis same plant, the hardware, and the baseline."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Sequence
+
+from retrofit.checks import model_band
+from retrofit.report.found import derived_text
+from retrofit.report.hardware import component_names, verdict_words
+from retrofit.report.plant import cooling_needed_text, has_plant, plant_reason, unmet_text
+from retrofit.report.text_table import GAP, Column, paragraph, text_table, width
+from retrofit.study import Comparison, Entry
+from retrofit.units import UnitSystem
+
+Emphasis = Callable[[str], str]
+Words = tuple[str, tuple[str, ...]]  # heading of a column, and its cells
+NEAR = "≈"
+NOTHING = "·"
+OUTSIDE = "*"
+
+
+def row_names(entries: Sequence[Entry]) -> list[str]:
+    """Return the names of refrigerants at the beginning of their rows."""
+    return [f"{entry.refrigerant.designation}{' (today)' if entry.family == 'keep' else ''}" for entry in entries]
+
+
+def change_cell(entry: Entry, ratio: str) -> str:
+    """Return a ratio to today as a change, with a sign before it where it lies inside the band of the model.
+
+    Args:
+        entry: A refrigerant.
+        ratio: Name of the ratio.
+    """
+    if entry.family == "keep" or ratio not in entry.relative:
+        return NOTHING
+    change = entry.relative[ratio] - 1.0
+    band = model_band()["cop" if "cop" in ratio else "capacity"].value
+    near = f"{NEAR} " if abs(change) <= band else ""
+    return near + f"{change:+.1%}".replace("-", "−").replace("%", " %")
+
+
+def plant_text(comparison: Comparison, units: UnitSystem, columns: int, strong: Emphasis) -> str:
+    """Return the table of the basis same plant, or why there is none.
+
+    Args:
+        comparison: An assessed result.
+        units: The reader's units.
+        columns: Width to wrap prose to. [characters]
+        strong: How a heading is set off.
+    """
+    heading = strong("Same plant: existing machine, same media; pressures float")
+    without = [entry for entry in comparison.entries if entry.duty is not None and entry.plant is None]
+    reasons = dict.fromkeys(plant_reason(comparison, entry) for entry in without)
+    if not has_plant(comparison):
+        return "\n".join([heading, *(paragraph(f"Not computed: {reason}.", columns) for reason in reasons)])
+    convention = f"same air, water or brine; to deliver: {cooling_needed_text(comparison, units)}"
+    lines = [heading, paragraph(convention, columns), _plant_table(comparison, units)]
+    if any(entry.plant and not entry.plant.is_covered for entry in comparison.entries):
+        lines.append(paragraph(f"{OUTSIDE} outside the data of the compressor: carried on beyond them.", columns))
+    lines += [
+        paragraph(f"{entry.refrigerant.designation} not computed: {plant_reason(comparison, entry)}.", columns)
+        for entry in without
+    ]
+    return "\n".join(lines)
+
+
+def _plant_table(comparison: Comparison, units: UnitSystem) -> str:
+    entries = [entry for entry in comparison.entries if entry.plant is not None]
+    plants = [entry.plant for entry in entries if entry.plant is not None]
+    names = [
+        f"{name}{'' if plant.is_covered else OUTSIDE}" for name, plant in zip(row_names(entries), plants, strict=True)
+    ]
+    T, kW = units.label("temperature"), units.label("cooling")
+    unmet = units.column("cooling", [plant.operation.unmet_W or None for plant in plants], missing=NOTHING)
+    table = [
+        (Column("", "", is_words=True), names),
+        (Column("Evap.", T), units.column("temperature", [plant.full.T_evap_dew_K for plant in plants])),
+        (Column("Cond.", T), units.column("temperature", [plant.full.T_cond_dew_K for plant in plants])),
+        (Column("Discharge", T), units.column("temperature", [plant.full.T_discharge_K for plant in plants])),
+        (Column("Cooling", kW), units.column("cooling", [plant.full.cooling_W for plant in plants])),
+        (Column("Cooling vs", "today"), [change_cell(entry, "plant_capacity") for entry in entries]),
+        (Column("COP vs", "today"), [change_cell(entry, "plant_cop_same_cooling") for entry in entries]),
+        (Column("Runs", "%"), units.column("fraction", [plant.operation.run_time_fraction for plant in plants])),
+        (Column("Speed", "%"), units.column("fraction", [plant.operation.speed_fraction for plant in plants])),
+        (Column("Lacks", kW), [unmet_text(*pair) for pair in zip(unmet, entries, strict=True)]),
+    ]
+    if all(plant.operation.speed_fraction == 1.0 for plant in plants):
+        table = [item for item in table if item[0].heading != "Speed"]
+    rows = [list(row) for row in zip(*(cells for _, cells in table), strict=True)]
+    text = text_table([column for column, _ in table], rows)
+    return f"{text}\nEvap., cond.: dew points, at full. COP at the same cooling."
+
+
+def hardware_text(comparison: Comparison, columns: int, strong: Emphasis) -> str:
+    """Return the verdicts on the components, as many refrigerants side by side as there is room for.
+
+    Args:
+        comparison: An assessed result.
+        columns: Width to keep to, if one refrigerant fits. [characters]
+        strong: How a heading is set off.
+    Returns: The text; empty if no component was judged.
+    """
+    names = component_names(comparison)
+    if not names:
+        return ""
+    entries = [entry for entry in comparison.entries if entry.hardware]
+    refrigerants = [
+        ("today" if entry.family == "keep" else entry.refrigerant.designation, verdict_words(entry, list(names)))
+        for entry in entries
+    ]
+    tables = []
+    for part in _side_by_side(refrigerants, columns - max(map(len, names.values()))):
+        heads = [Column("", "", is_words=True), *(Column(head, "", is_words=True) for head, _ in part)]
+        rows = list(zip(names.values(), *(words for _, words in part), strict=True))
+        tables.append(text_table(heads, rows))
+    heading = strong("Hardware: keep, adjust, replace, or unknown for lack of data (numbers in the report)")
+    return "\n".join([heading, "\n\n".join(tables)])
+
+
+def _side_by_side(refrigerants: Sequence[Words], room: int) -> list[list[Words]]:
+    """Return columns of words in parts that fit into some room, at least one in each. [characters]"""
+    parts: list[list[Words]] = [[]]
+    left = room
+    for item in refrigerants:
+        wide = len(GAP) + max(width(text) for text in (item[0], *item[1]))
+        if parts[-1] and wide > left:
+            parts.append([])
+            left = room
+        parts[-1].append(item)
+        left -= wide
+    return parts
+
+
+def baseline_text(comparison: Comparison, units: UnitSystem, columns: int, strong: Emphasis) -> str:
+    """Return what the readings say, in a few lines; empty if the case has none.
+
+    Args:
+        comparison: The result.
+        units: The reader's units.
+        columns: Width to wrap to. [characters]
+        strong: How a heading is set off.
+    """
+    found = comparison.baseline
+    if found is None:
+        return ""
+    lines = [strong("The plant as found, from its readings")]
+    if found.derived:
+        values = [f"{item.name[:1].lower()}{item.name[1:]} {derived_text(item, units)}" for item in found.derived]
+        text = "; ".join(values)
+        lines.append(paragraph(f"{text[:1].upper()}{text[1:]}.", columns))
+    lines += [
+        paragraph(f"{item.level:<9}{item.title}. {item.text}", columns, indent=" " * 9, first="")
+        for item in found.problems
+    ]
+    if found.missing:
+        count = len(found.missing)
+        lines.append(paragraph(f"{count} more quantities need readings that are not there: see the report.", columns))
+    return "\n".join(lines)
