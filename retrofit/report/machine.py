@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import csv
+import datetime
 import io
 from collections.abc import Mapping
 from dataclasses import asdict, fields
@@ -12,6 +13,7 @@ from retrofit.properties import Grade
 from retrofit.refrigerants import GWP_BASES, Refrigerant
 from retrofit.study import Baseline, Comparison, Component, Entry, Finding, Installed, Performance, Point
 from retrofit.study.compare import RATIOS
+from retrofit.study.law import LawCheck
 
 # Unit of the SI number of each kind of quantity that a component is measured by.
 UNITS = {
@@ -57,6 +59,7 @@ def comparison_json(comparison: Comparison) -> dict[str, Any]:
         "candidates": [_entry(entry) for entry in comparison.candidates],
         "defaults": [asdict(default) for default in case.defaults],
         "baseline": _baseline(comparison.baseline),
+        "law": _plain(asdict(comparison.law)) if comparison.law else None,
     }
 
 
@@ -68,6 +71,23 @@ def _baseline(found: Baseline | None) -> dict[str, Any] | None:
         "problems": [_finding(finding) for finding in found.problems],
         "missing": list(found.missing),
     }
+
+
+def _law(found: LawCheck | None) -> dict[str, Any] | None:
+    """Return what the tables of law say, each row with its paragraph for a reader."""
+    if found is None:
+        return None
+    rows = [_plain(asdict(row)) | {"line": row.line} for row in found.rows]
+    return {**_plain(asdict(found)), "rows": rows}
+
+
+def _plain(value: Any) -> Any:
+    """Return data with every date as its text."""
+    if isinstance(value, dict):
+        return {key: _plain(item) for key, item in value.items()}
+    if isinstance(value, list | tuple):
+        return [_plain(item) for item in value]
+    return value.isoformat() if isinstance(value, datetime.date) else value
 
 
 def _finding(finding: Finding) -> dict[str, Any]:
@@ -91,6 +111,7 @@ def _entry(entry: Entry) -> dict[str, Any]:
         "T_discharge_difference_K": entry.T_discharge_difference_K,
         "verdict": entry.verdict,
         "hardware": [_component(component) for component in entry.hardware],
+        "law": _law(entry.law),
         "findings": [_finding(finding) for finding in entry.findings],
         "cautions": [asdict(caution) for caution in entry.cautions],
     }

@@ -115,7 +115,8 @@ def _about_gas(row: Row, plant: Plant) -> Iterator[Said]:
     if row.safety_classes and not safety_class:
         yield UNKNOWN, f"the safety class of {plant.refrigerant.designation} is not stated", ""
     elif row.safety_classes:
-        yield _yes(bool(set(safety_class.split("/")) & set(row.safety_classes)))
+        is_inside = bool(set(safety_class.split("/")) & set(row.safety_classes))
+        yield (APPLIES if is_inside else NO, "", f"class {safety_class}")
 
 
 def _about(limit: Limit, row: Row, plant: Plant) -> Said:

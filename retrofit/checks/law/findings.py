@@ -55,16 +55,24 @@ def _ban(row: LawRow, check: LawCheck, is_today: bool) -> Iterator[Finding]:
     """Weigh a ban: in force when the gas goes in, or beginning while the plant still runs."""
     if not row.gas or row.applies_from is None or row.state == UNKNOWN:
         return
-    if row.in_force(check.start):
-        title, level = "Service with this gas is banned by then", "stop"
-        if is_today:
-            title, level = "Service with today's gas is banned", "work" if row.gas == "new" else "stop"
-    else:
-        title, level = "A service ban begins within the remaining life", "work"
-    if row.state != APPLIES:
-        level = "unknown" if level == "stop" else level
+    title, level = _ban_words(row, row.in_force(check.start), is_today)
+    if row.state != APPLIES and level == "stop":
+        level = "unknown"
     advice = "Ask where gas for service would come from until the plant ends. " + _CHECK
     yield Finding("law-ban", level, title, row.line, advice, row.source)
+
+
+def _ban_words(row: LawRow, is_in_force: bool, is_today: bool) -> tuple[str, str]:
+    """Return title and level of a ban; with reclaimed gas left, today's plant can still be served."""
+    if row.subject == "supply":
+        return (
+            "New gas is no longer sold" if is_in_force else "The sale of new gas ends in the remaining life"
+        ), "work"
+    if not is_in_force:
+        return "A service ban begins within the remaining life", "work"
+    if is_today:
+        return "Service with today's gas is banned", "work" if row.gas == "new" else "stop"
+    return "Service with this gas is banned by the day of the change", "stop"
 
 
 def _detection(row: LawRow, comparison: Comparison) -> Iterator[Finding]:
@@ -86,7 +94,8 @@ def _leak_rate(row: LawRow, comparison: Comparison) -> Iterator[Finding]:
 
 
 def _change(row: LawRow, is_today: bool) -> Iterator[Finding]:
-    if row.subject == "change of refrigerant" and row.state != UNKNOWN and not is_today:
+    """Note what is said of this refrigerant; what is said of every change stays among the rows."""
+    if row.subject == "change of refrigerant" and row.measured and row.state != UNKNOWN and not is_today:
         title = "What the tables say on changing the refrigerant"
         yield Finding("law-change", "note", title, row.line, _CHECK, row.source)
 
