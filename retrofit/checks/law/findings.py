@@ -101,7 +101,8 @@ def _change(row: LawRow, is_today: bool) -> Iterator[Finding]:
 
 
 def _leak_checks(check: LawCheck, is_today: bool) -> Iterator[Finding]:
-    rows = [row for row in check.rows_on("leak check") if row.value is not None and row.in_force(check.start)]
+    in_force = [row for row in check.rows_on("leak check") if row.in_force(check.start)]
+    rows, open_rows = [row for row in in_force if row.value], [row for row in in_force if not row.value]
     if not rows or check.leak_check_months is None:
         return
     fact = f"at least every {check.leak_check_months:g} months"
@@ -109,9 +110,11 @@ def _leak_checks(check: LawCheck, is_today: bool) -> Iterator[Finding]:
     if not is_today:
         fact += f", today every {before:g} months" if before else ", today none or not known"
     fact += "; " + "; ".join(row.measured for row in rows if row.measured) + "."
-    memory = " A row is from memory." if any(row.is_from_memory for row in rows) else ""
-    sources = "; ".join(dict.fromkeys(row.source for row in rows))
-    yield Finding("law-leak-check", "note", "Leak checks by the tables", fact + memory, _CHECK, sources)
+    fact += "".join(f" Open: {row.text} {row.measured}." for row in open_rows if row.state != UNKNOWN)
+    if any(row.is_from_memory for row in in_force):
+        fact += " A row is from memory."
+    sources = "; ".join(dict.fromkeys(row.source for row in in_force))
+    yield Finding("law-leak-check", "note", "Leak checks by the tables", fact, _CHECK, sources)
 
 
 def _missing(check: LawCheck) -> Iterator[Finding]:
