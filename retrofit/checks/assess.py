@@ -8,6 +8,7 @@ from dataclasses import replace
 from retrofit.checks.gates import GATES
 from retrofit.checks.hardware import hardware_findings, hardware_rows
 from retrofit.checks.law import law_findings, with_law
+from retrofit.checks.room import room_check, room_findings
 from retrofit.checks.thresholds import thresholds_for
 from retrofit.study import Comparison, Entry, Finding
 
@@ -37,10 +38,12 @@ def _assessed(comparison: Comparison, entry: Entry) -> Entry:
     rows = hardware_rows(comparison, entry, found)
     found += hardware_findings(rows, entry is comparison.existing)
     found += law_findings(comparison, entry)
+    room = room_check(comparison, entry)
+    found += room_findings(comparison, entry, room)
     if entry.status != "ok":
         found.insert(0, _not_computed(entry))
     found.sort(key=lambda finding: LEVELS.index(finding.level))
-    return replace(entry, findings=tuple(found), hardware=rows, verdict=verdict(found))
+    return replace(entry, findings=tuple(found), hardware=rows, room=room, verdict=verdict(found))
 
 
 def _not_computed(entry: Entry) -> Finding:

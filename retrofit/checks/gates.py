@@ -18,6 +18,7 @@ from retrofit.checks.operating import (
     pressure_ratio,
     vacuum,
 )
+from retrofit.checks.room.change import asked_text
 from retrofit.checks.thresholds import model_band
 from retrofit.refrigerants import parse_safety_class
 from retrofit.study import Comparison, Entry, Finding, Performance
@@ -65,13 +66,14 @@ def class_change(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             new.safety_class.source or NO_SOURCE,
         )
     elif entry.family == "replace":
+        law = comparison.case.law
         yield Finding(
             "safety-class",
             "stop",
             "Less mild safety class than the plant was built for",
             f"class {new.safety_class.text}; the plant was built for {old.designation}, class {old.safety_class.text}.",
-            "That is not a conversion: the whole system would have to meet the standard for the new class, with owner "
-            "and authority informed. Treat it as a new, purpose-built plant.",
+            "That is not a conversion: treat it as a new, purpose-built plant. "
+            f"{asked_text(law.jurisdiction if law else None)}",
             "ASHRAE 15 and EN 378 as summarised in trade guidance (from memory); equipment listings",
         )
 

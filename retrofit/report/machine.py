@@ -112,6 +112,7 @@ def _entry(entry: Entry) -> dict[str, Any]:
         "verdict": entry.verdict,
         "hardware": [_component(component) for component in entry.hardware],
         "law": _law(entry.law),
+        "room": asdict(entry.room) if entry.room else None,
         "findings": [_finding(finding) for finding in entry.findings],
         "cautions": [asdict(caution) for caution in entry.cautions],
     }

@@ -14,6 +14,7 @@ from retrofit.properties import Grade
 from retrofit.refrigerants import Caution, Refrigerant
 from retrofit.study.hardware.numbers import HardwareNumbers
 from retrofit.study.law import LawBasis, LawCheck
+from retrofit.study.room import RoomCheck
 
 FloatArray = NDArray[np.float64]
 Number = TypeVar("Number", float, FloatArray)
@@ -282,6 +283,7 @@ class Entry:
         hardware_numbers: What the components of the plant see with it, beside today's; None if not computed.
         cautions: From its safety class; always there.
         law: What the tables of law say; None until looked into, or without a jurisdiction or a table for it.
+        room: Its charge against the room; None until the checks have run.
         findings, hardware, verdict: What the checks say; empty until they have run.
     """
 
@@ -305,6 +307,7 @@ class Entry:
     findings: tuple[Finding, ...] = ()
     hardware: tuple[Component, ...] = ()
     verdict: str = ""
+    room: RoomCheck | None = None
 
 
 @dataclass(frozen=True)

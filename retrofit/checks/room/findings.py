@@ -1,0 +1,103 @@
+"""Findings of the room checks: the charge against its limit, and a change of class that is no stop."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+from retrofit.checks.room.working import mass
+from retrofit.refrigerants import parse_safety_class
+from retrofit.study import Comparison, Entry, Finding
+from retrofit.study.room import ABOVE, UNKNOWN, RoomCheck
+
+DEFERS = "The standard in force, the authority and licensed practice decide."
+NO_SOURCE = "catalogue and case, which state none"
+
+
+def room_findings(comparison: Comparison, entry: Entry, room: RoomCheck) -> Iterator[Finding]:
+    """Yield what the charge against the room and the change of class mean for a refrigerant.
+
+    Args:
+        comparison: A result.
+        entry: One of its refrigerants.
+        room: Its charge against the room.
+    """
+    is_existing = entry is comparison.existing
+    if room.verdict == ABOVE:
+        yield _above(room, is_existing)
+    elif room.verdict == UNKNOWN and (comparison.case.room or (_hazards(entry) and not is_existing)):
+        yield _unknown(entry, room)
+    else:
+        yield from _doubtful(room)
+    change = room.change
+    if change is not None and change.level in ("work", "note"):
+        yield Finding(
+            "class-change",
+            change.level,
+            change.title,
+            f"class {change.old} today, {change.new} with {entry.refrigerant.designation}.",
+            f"{'; '.join(change.reasons)}. {' '.join(question.text for question in change.asked)} {DEFERS}",
+            "; ".join(dict.fromkeys(question.source for question in change.asked)),
+        )
+
+
+def _hazards(entry: Entry) -> tuple[str, ...]:
+    """Return what a leak does beyond suffocating, in words; a class that is not stated counts as both."""
+    parsed = parse_safety_class(entry.refrigerant.safety_class.value)
+    if parsed is None:
+        return ("toxic and flammable until its class is stated",)
+    holds = {"toxic": parsed.toxicity == "B", "flammable": parsed.flammability != "1"}
+    return tuple(word for word, is_so in holds.items() if is_so)
+
+
+def _charge(room: RoomCheck) -> str:
+    if room.lowest_kg is None or room.highest_kg is None or room.expected_kg is None:
+        return "charge not known"
+    of = "" if room.charge_of == "largest circuit" else ", the whole plant"
+    if room.lowest_kg == room.highest_kg:
+        return f"{mass(room.expected_kg)}{of}"
+    return f"{mass(room.expected_kg)} expected ({mass(room.lowest_kg)} to {mass(room.highest_kg)}){of}"
+
+
+def _above(room: RoomCheck, is_existing: bool) -> Finding:
+    """Return the finding of a charge above a limit; of the plant as it stands it is work to clear up."""
+    limit = room.deciding
+    assert limit is not None
+    assert limit.limit_kg is not None
+    return Finding(
+        "room-charge",
+        "work" if is_existing else "stop",
+        "Charge above what a room of this kind may take",
+        f"{_charge(room)}, against {mass(limit.limit_kg)} by {limit.title[0].lower()}{limit.title[1:]} "
+        f"({limit.code_family}), decided by {limit.decided_by}.",
+        "Ask what the plant was approved under. " + DEFERS
+        if is_existing
+        else f"Less charge in a circuit, a machinery room, or another refrigerant; ask for the measures. {DEFERS}",
+        f"{limit.source}; {limit.edition}",
+    )
+
+
+def _unknown(entry: Entry, room: RoomCheck) -> Finding:
+    why = f"the refrigerant is {' and '.join(_hazards(entry))}" if _hazards(entry) else "the case gives a room"
+    return Finding(
+        "room-charge",
+        "unknown",
+        "Charge against the room not known",
+        f"{_charge(room)}; {why}. Missing: {'; '.join(room.unknown_because)}.",
+        f"Give what is missing and look up the limits. {DEFERS}",
+        "; ".join(dict.fromkeys(limit.source for limit in room.limits if limit.role == "limit")) or NO_SOURCE,
+    )
+
+
+def _doubtful(room: RoomCheck) -> Iterator[Finding]:
+    """Note where a charge is below a limit that rests on memory or on figures in dispute."""
+    flags = [flag for limit in room.limits if limit.role == "limit" for flag in limit.flags]
+    if room.verdict == UNKNOWN or not flags:
+        return
+    yield Finding(
+        "room-limit-doubtful",
+        "note",
+        "Limits of the room rest on memory or figures in dispute",
+        f"{_charge(room)}; {'; '.join(dict.fromkeys(flags))}.",
+        f"Look the figures up before they are used. {DEFERS}",
+        "; ".join(dict.fromkeys(limit.source for limit in room.limits if limit.role == "limit")),
+    )

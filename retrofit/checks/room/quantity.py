@@ -1,0 +1,97 @@
+"""The alternative of EN 378-1 C.3: quantity limits with minimum and with additional ventilation.
+
+It has several conditions that a case file does not hold, so it is shown beside the other limits and decides nothing.
+"""
+
+from __future__ import annotations
+
+import tomllib
+from functools import cache
+from importlib.resources import files
+from typing import Any
+
+from retrofit.case import Room
+from retrofit.checks.room.en378 import EDITIONS
+from retrofit.checks.room.lfl import caps
+from retrofit.checks.room.working import Rule, Work, class_flags, class_of, concentration, mass, room_volume
+from retrofit.refrigerants import Refrigerant
+from retrofit.study.room import WorkedLimit
+
+LARGEST_AREA_M2 = 250.0  # a larger room counts as one of this area
+LARGEST_CHARGE_KG = 150.0
+CLASSES = ("A1", "A2L")
+_CONDITIONS = (
+    "it has several conditions that a case does not hold (permanent joints, protection of the indoor unit and more): "
+    "read them before it is used"
+)
+
+
+@cache
+def quantity_limits() -> dict[str, Any]:
+    """Return the quantity limits, kg in a cubic metre by designation, and their source."""
+    return tomllib.loads(files("retrofit.checks.room").joinpath("quantity_limits.toml").read_text(encoding="utf-8"))
+
+
+def alternative(refrigerant: Refrigerant, room: Room, family: str = "EN 378") -> tuple[WorkedLimit, ...]:
+    """Return the alternative limits: without a measure, with one, and the end of what a lowest floor may hold.
+
+    Args:
+        refrigerant: The refrigerant.
+        room: The room.
+        family: "EN 378" or "ISO 5149".
+    Returns: Nothing for a class or location that the alternative is not for.
+    Source: Real Decreto 552/2019, IF-04, appendix 3.
+    """
+    if refrigerant.safety_class.text not in CLASSES or room.location_class not in (None, "II"):
+        return ()
+    table = quantity_limits()["kg_per_m3"].get(refrigerant.designation)
+    if room.below_ground:
+        named = [("rcl", "RCL", "no measure"), ("qlmv", "QLMV", "one measure"), ("qlav", "QLAV", "two measures")]
+    else:
+        named = [("qlmv", "QLMV", "no measure"), ("qlav", "QLAV", "one measure, two above it")]
+    return tuple(_limit(refrigerant, room, family, table, *name) for name in named)
+
+
+def _limit(
+    refrigerant: Refrigerant, room: Room, family: str, table: dict[str, float] | None, key: str, short: str, what: str
+) -> WorkedLimit:
+    work = Work(flags=[*class_flags(refrigerant), _CONDITIONS])
+    work.need(room.volume_m3, "`volume` in [room]")
+    work.need(room.area_m2, "`area` in [room]")
+    work.need(room.location_class, "`location` in [room]")
+    work.need(room.below_ground, "`below_ground` in [room]")
+    if table is None:
+        work.missing.append(f"{short} of {refrigerant.designation}: not in the table held here")
+    cap = _cap_kg(work, refrigerant)
+    limit, decided_by = None, "volume"
+    if table is not None and room.volume_m3 is not None and room.area_m2 is not None and cap is not None:
+        counted = room.volume_m3 * min(1.0, LARGEST_AREA_M2 / room.area_m2)
+        if counted < room.volume_m3:
+            work.lines.append(
+                f"of {room.area_m2:.4g} m² count {LARGEST_AREA_M2:g} m²: {room_volume(counted)} of "
+                f"{room_volume(room.volume_m3)}"
+            )
+        limit = table[key] * counted
+        work.lines.append(f"{short} · V = {concentration(table[key])} · {room_volume(counted)} = {mass(limit)}")
+        if cap < limit:
+            work.lines.append(f"at most {mass(cap)}")
+            limit, decided_by = cap, "cap of the alternative"
+    return work.limit(_rule(family, key, short, what), limit, decided_by, "class A1 or A2L, location class II")
+
+
+def _cap_kg(work: Work, refrigerant: Refrigerant) -> float | None:
+    """Return the largest charge of the alternative: 150 kg, and 1.5 m3 in class 2L."""
+    parsed = class_of(refrigerant)
+    if parsed is None or parsed.flammability == "1":
+        return LARGEST_CHARGE_KG
+    lfl = work.number("LFL", refrigerant.lfl_kg_per_m3, refrigerant)
+    return None if lfl is None else min(LARGEST_CHARGE_KG, caps(lfl, parsed.flammability).m3_kg)
+
+
+def _rule(family: str, key: str, short: str, what: str) -> Rule:
+    formula = f"m = {short} · V, at most 150 kg (A2L: and 1.5 · 130 m³ · LFL)"
+    symbols = ("m: charge [kg]", f"{short}: quantity limit [kg/m³]", "V: volume of the room, of 250 m² at most [m³]")
+    basis = "read" if family == "EN 378" else "memory"
+    title = f"Alternative provisions, {what}"
+    source = quantity_limits()["source"]
+    return Rule(f"quantity-{key}", title, family, EDITIONS[family], formula, symbols, source, basis, "alternative")
