@@ -1,8 +1,10 @@
 """Tables of law as files: complete rows, faults with their line, the user's own, review days and history."""
 
+import csv
 import datetime
 import re
 from dataclasses import replace
+from pathlib import Path
 
 import pytest
 from hypothesis import given
@@ -35,6 +37,7 @@ date_checked = 2026-01-01
 basis = "read"
 """
 ON = datetime.date(2026, 12, 1)
+PUBLISHED = Path(__file__).parents[2] / "published" / "law_rows.csv"
 
 
 @pytest.mark.parametrize(("table", "row"), ROWS, ids=lambda item: getattr(item, "id", ""))
@@ -46,6 +49,23 @@ def test_every_row_is_complete(table, row):
     assert row.basis in ("read", "extract", "memory")
     assert (row.confidence != "") == (row.basis == "memory")
     assert (row.applies_from is None) == (row.subject == "proposal")
+
+
+def test_dates_limits_and_figures_are_as_noted_from_the_texts():
+    """What each row holds is what was noted beside it: compared by eye with the texts that the row's source names."""
+    noted = list(csv.reader(PUBLISHED.read_text("utf-8").splitlines()))[1:]
+
+    assert sorted(noted) == sorted(_noted(row) for _, row in ROWS)
+
+
+def _noted(row):
+    """Return a row of a table as the list of notes has it."""
+    yes_no = {None: "", True: "yes", False: "no"}
+    flags = (row.hermetically_sealed, row.leak_detection_system, row.product_below_minus_50)
+    days = [str(day or "") for day in (row.applies_from, row.applies_until)]
+    value = "" if row.value is None else f"{row.value:.10g}"
+    limits = "; ".join(limit.words for limit in row.when)
+    return [row.id, *days, limits, value, row.unit, row.gas, *(yes_no[flag] for flag in flags)]
 
 
 def test_subjects_and_jurisdictions_are_covered():
@@ -236,6 +256,25 @@ def test_more_charge_is_never_checked_less_often(law_of, day, one, other, name):
     months = [law_of(name, kg, on=str(day)).leak_check_months or float("inf") for kg in (less, more)]
 
     assert months[1] <= months[0]
+
+
+@given(
+    day=st.dates(datetime.date(2015, 1, 1), datetime.date(2060, 1, 1)),
+    kg=CHARGES,
+    name=st.sampled_from(["R134a", "R404A", "R454C", "R1234yf", "R22"]),
+    sealed=st.booleans(),
+    detected=st.booleans(),
+    equipment=st.sampled_from(EQUIPMENT),
+)
+def test_one_interval_at_a_time(law_of, in_force, day, kg, name, sealed, detected, equipment):
+    """Steps neither overlap nor leave a gap: at most one interval applies, and above every step exactly one."""
+    given = {"on": str(day), "hermetically_sealed": sealed, "leak_detection_system": detected, "equipment": equipment}
+    check = law_of(name, kg, date_of_change=None, **given)
+    intervals = [row for row in in_force(check, "leak check") if row.value]
+
+    assert len(intervals) <= 1
+    if kg >= 30.0 and (name != "R1234yf" or day >= datetime.date(2024, 3, 11)) and name != "R454C":
+        assert len(intervals) == 1
 
 
 @given(day=DAYS, life=st.floats(0.1, 30.0), name=st.sampled_from(designations()))
