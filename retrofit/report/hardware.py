@@ -56,6 +56,7 @@ class Block:
         constants: Numbers that are the same in every line.
         headings: The numbers that differ: name and unit.
         lines: Today's refrigerant and the candidates; none if nothing differs between candidates.
+        today: Then, what is said of today's refrigerant alone, if it does not simply keep the component.
         held: What it is held against.
     """
 
@@ -66,6 +67,7 @@ class Block:
     constants: tuple[str, ...]
     headings: tuple[tuple[str, str], ...]
     lines: tuple[Line, ...]
+    today: str
     held: tuple[Held, ...]
 
     @property
@@ -157,6 +159,7 @@ def _block(comparison: Comparison, code: str, units: UnitSystem) -> Block:
         tuple(_constant(*heading, columns[heading][0]) for heading in columns if heading not in differing),
         tuple(differing),
         () if is_alike else _lines(comparison.existing, today, pairs, list(differing.values()), shared),
+        _alone(comparison.existing, today, shared) if today and today.verdict != "keep" else "",
         _held(pairs),
     )
 
@@ -194,13 +197,17 @@ def _lines(
     """Return today's refrigerant and the others, each with its numbers and what is said of it alone."""
 
     def line(entry: Entry, item: Component | None, row: tuple[str, ...]) -> Line:
-        alone = [text for text in _sentences(entry, item) if text not in shared] if item else []
-        verdict = item.verdict if item else MISSING
-        return Line(entry.refrigerant.display_name, verdict, row, " ".join(alone))
+        verdict, alone = (item.verdict, _alone(entry, item, shared)) if item else (MISSING, "")
+        return Line(entry.refrigerant.display_name, verdict, row, alone)
 
     cells = list(zip(*columns, strict=True)) or [()] * (len(pairs) + 1)
     candidates = [(entry, item, row) for (entry, item), row in zip(pairs, cells[1:], strict=True)]
     return (line(existing, today, cells[0]), *(line(*found) for found in candidates if found[0] is not existing))
+
+
+def _alone(entry: Entry, item: Component, shared: Sequence[str]) -> str:
+    """Return what is said of a refrigerant alone."""
+    return " ".join(text for text in _sentences(entry, item) if text not in shared)
 
 
 def _sentences(entry: Entry, item: Component) -> list[str]:

@@ -115,6 +115,23 @@ def _used(case: Case, key: str, units: UnitSystem) -> str:
     return units.with_unit(kind, value, decimals=1 if kind == "fraction" else None)
 
 
+SAME_EFFICIENCIES = (
+    "The compressor's isentropic and volumetric efficiency are the same for every refrigerant and pressure ratio."
+)
+SAME_CURVES = "The compressor's efficiencies follow the pressure ratio by the data given, alike for every refrigerant."
+ONE_STAGE = (
+    "One stage of compression. Pressure drops and heat lost by the compressor only as far as the case gives them."
+)
+HELD = "Evaporating and condensing temperatures are held as the convention says; the exchangers are not calculated."
+FLOATING = (
+    "On the bases same duty and same compressor, evaporating and condensing temperatures are held as the convention "
+    "says. On the basis same plant they are found: its exchangers have the conductance that today's point gives them, "
+    "times the factor of the case, whatever the flow of refrigerant; superheat and subcooling are those of the case "
+    "where the temperature differences leave room for them, and less where they do not."
+)
+CIRCULATING = "A blend circulates with the composition of its designation."
+
+
 def fixed(comparison: Comparison) -> tuple[str, ...]:
     """Return what is built into the calculation of this comparison, in sentences.
 
@@ -125,19 +142,8 @@ def fixed(comparison: Comparison) -> tuple[str, ...]:
     has_data = compressor.efficiency_points is not None or compressor.polynomial is not None
     has_plant = any(entry.plant for entry in comparison.entries)
     return (
-        "The compressor's isentropic and volumetric efficiency follow from the pressure ratio, the same curve for "
-        "every refrigerant."
-        if has_data
-        else "The compressor's isentropic and volumetric efficiency are the same for every refrigerant and pressure "
-        "ratio.",
-        "One stage of compression. Pressure drops and heat lost by the compressor only as far as the case gives them.",
-        "On the bases same duty and same compressor, evaporating and condensing temperatures are held as the "
-        "convention says"
-        + (
-            "; on the basis same plant they are found. Its exchangers have the conductance that today's point gives "
-            "them, times the factor of the case, whatever the flow of refrigerant."
-            if has_plant
-            else "; the exchangers are not calculated."
-        ),
-        "A blend circulates with the composition of its designation.",
+        SAME_CURVES if has_data else SAME_EFFICIENCIES,
+        ONE_STAGE,
+        FLOATING if has_plant else HELD,
+        CIRCULATING,
     )

@@ -5,7 +5,7 @@ from __future__ import annotations
 from operator import attrgetter
 
 from retrofit.checks import model_band
-from retrofit.report.rows import change_row, change_text, quantity_row
+from retrofit.report.rows import change_row, change_text, near, quantity_row
 from retrofit.report.table import Cell, Group, Notes, Row
 from retrofit.study import Comparison, Entry
 from retrofit.units import MISSING, UnitSystem
@@ -185,17 +185,21 @@ def speed_rows(comparison: Comparison, units: UnitSystem, speeds: list[float | N
 
 
 def _unmet_cells(comparison: Comparison, units: UnitSystem) -> tuple[Cell, ...]:
-    values = _values(comparison, "operation.unmet_W")
-    texts = units.column("cooling", [None if not value else value for value in values], missing="none")
-    return tuple(
-        Cell(MISSING if value is None else unmet_text(text, entry))
-        for text, value, entry in zip(texts, values, comparison.entries, strict=True)
-    )
+    return tuple(Cell(unmet_text(entry, units, "none")) for entry in comparison.entries)
 
 
-def unmet_text(text: str, entry: Entry) -> str:
-    """Return the cooling a refrigerant lacks; one inside the band of the model begins with the sign ≈."""
-    assert entry.plant is not None
-    run, band = entry.plant.operation, model_band()["capacity"].value
-    is_near = 0.0 < run.unmet_W <= band * run.cooling_needed_W
-    return f"≈\N{NARROW NO-BREAK SPACE}{text}" if is_near else text
+def unmet_text(entry: Entry, units: UnitSystem, nothing: str) -> str:
+    """Return the cooling a refrigerant lacks; one inside the band of the model begins with the sign ≈.
+
+    Args:
+        entry: A refrigerant.
+        units: The reader's units.
+        nothing: What stands for lacking none. [-]
+    """
+    if entry.plant is None:
+        return MISSING
+    lacks, needed = entry.plant.operation.unmet_W, entry.plant.operation.cooling_needed_W
+    if lacks <= 0.0:
+        return nothing
+    text = units.text("cooling", lacks, decimals=units.displays["cooling"].decimals_for([needed]))
+    return near(text) if lacks <= model_band()["capacity"].value * needed else text

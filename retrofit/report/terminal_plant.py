@@ -10,7 +10,7 @@ from retrofit.report.hardware import component_names, verdict_words
 from retrofit.report.plant import cooling_needed_text, has_plant, plant_reason, unmet_text
 from retrofit.report.text_table import GAP, Column, paragraph, text_table, width
 from retrofit.study import Comparison, Entry
-from retrofit.units import UnitSystem
+from retrofit.units import UnitSystem, format_number
 
 Emphasis = Callable[[str], str]
 Words = tuple[str, tuple[str, ...]]  # heading of a column, and its cells
@@ -36,7 +36,7 @@ def change_cell(entry: Entry, ratio: str) -> str:
     change = entry.relative[ratio] - 1.0
     band = model_band()["cop" if "cop" in ratio else "capacity"].value
     near = f"{NEAR} " if abs(change) <= band else ""
-    return near + f"{change:+.1%}".replace("-", "−").replace("%", " %")
+    return f"{near}{format_number(100.0 * change, 1, signed=True)} %"
 
 
 def plant_text(comparison: Comparison, units: UnitSystem, columns: int, strong: Emphasis) -> str:
@@ -71,7 +71,6 @@ def _plant_table(comparison: Comparison, units: UnitSystem) -> str:
         f"{name}{'' if plant.is_covered else OUTSIDE}" for name, plant in zip(row_names(entries), plants, strict=True)
     ]
     T, kW = units.label("temperature"), units.label("cooling")
-    unmet = units.column("cooling", [plant.operation.unmet_W or None for plant in plants], missing=NOTHING)
     table = [
         (Column("", "", is_words=True), names),
         (Column("Evap.", T), units.column("temperature", [plant.full.T_evap_dew_K for plant in plants])),
@@ -82,7 +81,7 @@ def _plant_table(comparison: Comparison, units: UnitSystem) -> str:
         (Column("COP vs", "today"), [change_cell(entry, "plant_cop_same_cooling") for entry in entries]),
         (Column("Runs", "%"), units.column("fraction", [plant.operation.run_time_fraction for plant in plants])),
         (Column("Speed", "%"), units.column("fraction", [plant.operation.speed_fraction for plant in plants])),
-        (Column("Lacks", kW), [unmet_text(*pair) for pair in zip(unmet, entries, strict=True)]),
+        (Column("Lacks", kW), [unmet_text(entry, units, NOTHING) for entry in entries]),
     ]
     if all(plant.operation.speed_fraction == 1.0 for plant in plants):
         table = [item for item in table if item[0].heading != "Speed"]
