@@ -49,6 +49,19 @@ def capacity_needed_W(comparison: Comparison) -> float:
     return min(duty, today.cooling_W) if today else duty
 
 
+def cooling_reached(comparison: Comparison, entry: Entry) -> tuple[float, float, str] | None:
+    """Return the cooling a refrigerant reaches, the cooling needed, and on which machine. [W]
+
+    On the plant as installed where today's refrigerant and this one both balance there; else with the existing
+    compressor at the temperatures of the case. None if nothing is known.
+    """
+    if entry.plant and comparison.existing.plant:
+        return entry.plant.full.cooling_W, entry.plant.operation.cooling_needed_W, "on the plant as installed"
+    if entry.compressor is None:
+        return None
+    return entry.compressor.cooling_W, capacity_needed_W(comparison), "with the existing compressor"
+
+
 def class_change(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
     """Stop a candidate of a less mild safety class: by default that is a new plant, not a conversion."""
     if entry is comparison.existing:
@@ -72,21 +85,25 @@ def class_change(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             "stop",
             "Less mild safety class than the plant was built for",
             f"class {new.safety_class.text}; the plant was built for {old.designation}, class {old.safety_class.text}.",
-            "That is not a conversion: treat it as a new, purpose-built plant. "
+            "That is not a conversion: the whole system would have to meet the standard for the new class, with owner "
+            "and authority informed and the name plate changed. Treat it as a new, purpose-built plant. "
             f"{asked_text(law.jurisdiction if law else None)}",
             "ASHRAE 15 and EN 378 as summarised in trade guidance (from memory); equipment listings",
         )
 
 
 def capacity(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
-    """Compare the cooling with the existing compressor with the cooling needed."""
-    if entry.compressor is None:
-        return
-    limit, band = limit_of(comparison, "capacity"), model_band()["capacity"].value
-    share = entry.compressor.cooling_W / capacity_needed_W(comparison)
+    """Compare the cooling on the existing machine with the cooling needed."""
     if entry is comparison.existing:
-        yield from _today_against_duty(comparison, entry.compressor)
+        if entry.compressor:
+            yield from _today_against_duty(comparison, entry.compressor)
         return
+    found = cooling_reached(comparison, entry)
+    limit, band = limit_of(comparison, "capacity"), model_band()["capacity"].value
+    if found is None:
+        return
+    reached, needed, machine = found
+    share = reached / needed
     level = limit.level_below(share)
     if level is None:
         return
@@ -94,11 +111,24 @@ def capacity(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
     yield Finding(
         "capacity",
         level,
-        "Less cooling than needed with the existing compressor",
-        f"{entry.compressor.cooling_W / 1e3:.4g} kW, {share:.0%} of the {capacity_needed_W(comparison) / 1e3:.4g} kW "
-        f"needed.{doubt}",
+        f"Less cooling than needed {machine}",
+        f"{reached / 1e3:.4g} kW, {share:.0%} of the {needed / 1e3:.4g} kW needed.{doubt}",
         "Reduce the load, add displacement or choose another refrigerant.",
         limit.source,
+    )
+
+
+def compressor_data(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
+    """Note where a refrigerant leaves the range that the data of the compressor cover."""
+    if entry.plant is None or entry.plant.is_covered:
+        return
+    yield Finding(
+        "compressor-data",
+        "note",
+        "Outside the data of the compressor",
+        f"pressure ratio {entry.plant.full.pressure_ratio:.1f} at {entry.plant.full.p_evap_Pa / 1e5:.2f} bar a.",
+        "The efficiencies there are carried on from the nearest data; ask the maker for data with this refrigerant.",
+        "range of the points or of the polynomial in the case",
     )
 
 
@@ -245,6 +275,7 @@ GATES: tuple[Gate, ...] = (
     discharge_temperature,
     pressure_ratio,
     capacity,
+    compressor_data,
     glide,
     vacuum,
     motor,

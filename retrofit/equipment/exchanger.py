@@ -70,7 +70,8 @@ def _mean_of_parts(difference: FloatArray, share: FloatArray) -> FloatArray:
     logarithmic = np.where(close, 0.5 * (near + far), (far - near) / np.where(close, 1.0, ratio))
     mean: FloatArray = 1.0 / np.sum(np.diff(share, axis=0) / logarithmic, axis=0)
     # No jump where the smallest difference closes: a solver has to see its way back.
-    return np.where(lowest > 0.0, mean * np.minimum(1.0, lowest / SMALLEST_DIFFERENCE_K), lowest)
+    closing: FloatArray = np.where(lowest > 0.0, mean * np.minimum(1.0, lowest / SMALLEST_DIFFERENCE_K), lowest)
+    return closing
 
 
 def _behind_effectiveness(mean_lead: FloatArray, change: FloatArray) -> FloatArray:

@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator
 
 from retrofit.checks.corners import worst
-from retrofit.checks.gates import capacity_needed_W
+from retrofit.checks.gates import cooling_reached
 from retrofit.checks.hardware.rows import KELVIN, Bound, Matter, View, judged, performance_measure, stated
 from retrofit.checks.operating import discharge_limit, motor_load
 from retrofit.study import Component, Measure
@@ -67,17 +67,19 @@ def motor(view: View) -> Iterator[Component]:
 
 
 def capacity(view: View) -> Iterator[Component]:
-    """Compare the cooling with the existing displacement with the cooling needed."""
-    found, needed = view.entry.compressor, capacity_needed_W(view.comparison)
-    if found is None or view.comparison.existing.compressor is None:
+    """Compare the cooling on the existing machine with the cooling needed."""
+    found = cooling_reached(view.comparison, view.entry)
+    today = cooling_reached(view.comparison, view.comparison.existing)
+    if found is None or today is None:
         return
+    reached, needed, machine = found
     bound = Bound(view.limits["capacity"], "below")
     measures = (
-        Measure("Cooling, same compressor", "cooling", view.comparison.existing.compressor.cooling_W, found.cooling_W),
+        Measure(f"Cooling {machine}", "cooling", today[0], reached),
         performance_measure(view, "Cooling, hottest day", "cooling", "cooling_W", "hottest"),
         Measure("Cooling needed", "cooling", needed, needed),
     )
-    fact = f"With the existing displacement there is {found.cooling_W / needed:.0%} of the cooling needed."
+    fact = f"There is {reached / needed:.0%} of the cooling needed {machine}."
     matter = Matter("displacement", "Compressor, displacement", fact, measures, (bound,))
     yield judged(matter, [view.level("capacity")])
 
