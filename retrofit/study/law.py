@@ -59,12 +59,20 @@ class LawRow:
         return self.basis == "memory"
 
     @property
+    def brief(self) -> str:
+        """The row without its source: dates, words, numbers, exceptions, and a word if nobody read the text itself."""
+        known = {"memory": "From memory.", "extract": "Known from an extract only."}.get(self.basis, "")
+        return " ".join(part for part in (*self._parts(), known) if part)
+
+    @property
     def line(self) -> str:
         """The row in one paragraph: dates, words, numbers, exceptions, source, basis, and what to check."""
-        parts = [f"{self.dates}: {self.text}", self.measured and f"{self.measured}."]
-        parts += [f"{_capital(reason)}." for reason in self.reasons]
-        parts += [self.exceptions and f"Exceptions and remarks: {self.exceptions}", self.deference]
-        return " ".join(part for part in parts if part)
+        return " ".join(part for part in (*self._parts(), self.deference) if part)
+
+    def _parts(self) -> tuple[str, ...]:
+        reasons = (f"{_capital(reason)}." for reason in self.reasons)
+        exceptions = self.exceptions and f"Exceptions and remarks: {self.exceptions}"
+        return (f"{self.dates}: {self.text}", self.measured and f"{self.measured}.", *reasons, exceptions)
 
     @property
     def dates(self) -> str:

@@ -59,7 +59,7 @@ def _ban(row: LawRow, check: LawCheck, is_today: bool) -> Iterator[Finding]:
     if row.state != APPLIES and level == "stop":
         level = "unknown"
     advice = "Ask where gas for service would come from until the plant ends. " + _CHECK
-    yield Finding("law-ban", level, title, row.line, advice, row.source)
+    yield Finding("law-ban", level, title, row.brief, advice, row.source)
 
 
 def _ban_words(row: LawRow, is_in_force: bool, is_today: bool) -> tuple[str, str]:
@@ -80,7 +80,7 @@ def _detection(row: LawRow, comparison: Comparison) -> Iterator[Finding]:
     if row.subject != "leak detection" or row.state == UNKNOWN or law is None or law.leak_detection_system:
         return
     title = "Leak detection system compulsory, none stated"
-    yield Finding("law-detection", "work", title, row.line, "Fit one, or correct the case. " + _CHECK, row.source)
+    yield Finding("law-detection", "work", title, row.brief, "Fit one, or correct the case. " + _CHECK, row.source)
 
 
 def _leak_rate(row: LawRow, comparison: Comparison) -> Iterator[Finding]:
@@ -88,7 +88,7 @@ def _leak_rate(row: LawRow, comparison: Comparison) -> Iterator[Finding]:
     if row.subject != "leak rate" or row.value is None or rate is None or row.state == UNKNOWN:
         return
     if round(rate * 100.0, 9) > row.value:
-        fact = f"{rate * 100.0:.3g} % per year. {row.line}"
+        fact = f"{rate * 100.0:.3g} % per year. {row.brief}"
         advice = "Find and repair the leaks before the change, whatever refrigerant goes in. " + _CHECK
         yield Finding("law-leak-rate", "work", "Leak rate above that of the law", fact, advice, row.source)
 
@@ -97,7 +97,7 @@ def _change(row: LawRow, is_today: bool) -> Iterator[Finding]:
     """Note what is said of this refrigerant; what is said of every change stays among the rows."""
     if row.subject == "change of refrigerant" and row.measured and row.state != UNKNOWN and not is_today:
         title = "What the tables say on changing the refrigerant"
-        yield Finding("law-change", "note", title, row.line, _CHECK, row.source)
+        yield Finding("law-change", "note", title, row.brief, _CHECK, row.source)
 
 
 def _leak_checks(check: LawCheck, is_today: bool) -> Iterator[Finding]:

@@ -180,6 +180,9 @@ def test_every_finding_of_law_defers(assessed):
 
     assert len({finding.code for finding in found}) >= 5
     assert all("Not legal advice: check the current text" in finding.advice and finding.source for finding in found)
+    bans = [finding for finding in found if finding.code == "law-ban" and "(date from memory)" in finding.source]
+    assert bans
+    assert all(finding.fact.endswith("From memory.") for finding in bans)
 
 
 def test_before_the_change_its_day_is_today_if_not_stated(assessed):
