@@ -18,12 +18,13 @@ from retrofit.checks.room.working import (
     room_volume,
     value_flags,
 )
-from retrofit.refrigerants import Refrigerant
+from retrofit.refrigerants import Refrigerant, SafetyClass
 from retrofit.study.room import WorkedLimit
 
 FAMILY = "ASHRAE 15"
 OCCUPANCY_FACTORS = {"institutional": 0.5, "other": 1.0}
 CONCENTRATION_FACTOR = 0.5  # CF of the dispersal volume, from memory
+RESTRICTED = "the standard restricts use beyond the charge, by rules not held here (from memory, high confidence)"
 QUARTER = 0.25  # an RCL by flammability is a quarter of the LFL (ASHRAE 34)
 LEFT_OUT = {"R717": "ASHRAE 15 (2022) leaves ammonia to IIAR 2, whose limits are not held here"}
 OUTSIDE_ROOM = (
@@ -144,11 +145,9 @@ def dispersal_limit(refrigerant: Refrigerant, room: Room) -> WorkedLimit:
 
 def _everything_else(work: Work, refrigerant: Refrigerant, room: Room) -> None:
     """Note what else this family needs to know, and where it does not apply."""
-    work.flags += [
-        *class_flags(refrigerant),
-        "the rule itself is from memory or an extract: look up the edition in force",
-    ]
-    if class_of(refrigerant) is None:
+    work.flags += [*class_flags(refrigerant), "the rule is from memory or an extract: look up the edition in force"]
+    parsed = class_of(refrigerant)
+    if parsed is None:
         work.missing.append(f"safety class of {refrigerant.designation}: the catalogue states none")
     work.need(room.volume_m3, "`volume` in [room]")
     work.need(room.occupancy, "`occupancy` in [room]")
@@ -156,3 +155,18 @@ def _everything_else(work: Work, refrigerant: Refrigerant, room: Room) -> None:
         work.missing.append(LEFT_OUT[refrigerant.designation])
     if room.location_class == "III":
         work.missing.append(OUTSIDE_ROOM)
+    if parsed is not None:
+        _restricted(work, parsed, room)
+
+
+def _restricted(work: Work, parsed: SafetyClass, room: Room) -> None:
+    """Note where a charge alone does not decide: below the concentration limit is then not enough."""
+    name = "".join(parsed)
+    if parsed.flammability in ("2", "3"):
+        work.missing.append(f"the authority's approval: for class {name} {RESTRICTED}")
+    elif parsed.toxicity == "B":
+        work.need(room.comfort, "`comfort` in [room]")
+        if room.comfort:
+            work.missing.append(f"whether the system may be used for comfort: for class {name} {RESTRICTED}")
+    elif parsed.flammability == "2L":
+        work.flags.append("class A2L: the standard asks for listing, detection and more beside the charge")

@@ -66,7 +66,7 @@ def what_is_asked(jurisdiction: str | None) -> tuple[Question, ...]:
     which = (
         "`jurisdiction` in [law] is not given" if jurisdiction is None else f"nothing is held here for {jurisdiction}"
     )
-    text = f"Which law and listing rules stand at the place of the plant? {which}; rows are held for {', '.join(held)}."
+    text = f"Look up law and listing rules at the place of the plant: {which}; rows are held for {' and '.join(held)}."
     return (*found, Question("jurisdiction", text, (), "", None, (which,), "limits of this tool", "practice"))
 
 
@@ -76,9 +76,10 @@ def _lies_in(jurisdiction: str, name: str) -> bool:
 
 
 def asked_text(jurisdiction: str | None) -> str:
-    """Return what is asked as one text, for the advice of a finding.
+    """Return what is asked in a jurisdiction beyond what is asked everywhere, for the advice of a finding.
 
     Args:
         jurisdiction: Whose law, None if not stated.
     """
-    return " ".join(question.text for question in what_is_asked(jurisdiction))
+    everywhere = {row["text"] for row in read("change")["asked"] if not row["jurisdictions"]}
+    return " ".join(question.text for question in what_is_asked(jurisdiction) if question.text not in everywhere)

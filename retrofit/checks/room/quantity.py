@@ -60,6 +60,10 @@ def _limit(
     work.need(room.area_m2, "`area` in [room]")
     work.need(room.location_class, "`location` in [room]")
     work.need(room.below_ground, "`below_ground` in [room]")
+    if key != "rcl":
+        work.need(room.ventilation, "`ventilation` in [room]")
+        if room.ventilation == "none":
+            work.missing.append(f"ventilation of the room: {short} counts on some, and the case says there is none")
     if table is None:
         work.missing.append(f"{short} of {refrigerant.designation}: not in the table held here")
     cap = _cap_kg(work, refrigerant)

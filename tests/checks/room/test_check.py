@@ -336,3 +336,19 @@ def test_a_room_check_is_plain_data(results):
 
         assert entry.room.verdict in ("below the limit", "above the limit", "unknown")
         assert not [word for word in ("is safe", "certified", "complies") if word in text]
+
+
+@pytest.mark.parametrize(
+    ("jurisdiction", "words"), [("EU", "EN 378-4"), ("US", "SNAP"), (None, "`jurisdiction` in [law]")]
+)
+def test_the_stop_on_a_class_says_what_the_place_asks(results, jurisdiction, words):
+    """A2L in place of A1: the whole system, owner and authority, name plate, and the rows of the jurisdiction."""
+    law = {} if jurisdiction is None else {"jurisdiction": jurisdiction}
+    before = results()
+    case = replace(before.case, law=Law.model_validate(law))
+    (stop,) = [
+        item for item in assess(replace(before, case=case)).candidates[1].findings if item.code == "safety-class"
+    ]
+
+    assert stop.level == "stop"
+    assert all(part in stop.advice for part in ("whole system", "owner and authority", "name plate", words))

@@ -16,6 +16,7 @@ FULL = {
     "location": "II",
     "below_ground": False,
     "comfort": False,
+    "ventilation": "natural",
     "sealed": False,
 }
 
@@ -304,7 +305,7 @@ def test_an_unresolved_rcl_shows_both_candidates(name):
     assert all(any("unresolved" in flag for flag in limit.flags) for limit in (kept, other))
 
 
-@pytest.mark.parametrize("name", ["R448A", "R454C", "R290", "R744"])
+@pytest.mark.parametrize("name", ["R448A", "R454C", "R744"])
 def test_a_limit_from_memory_is_flagged(name):
     """Their RCL was not read in a document."""
     limit = one(ashrae15.limits(find(name), room()), "rcl")
@@ -356,13 +357,21 @@ def test_a_missing_input_is_named_and_makes_no_limit(name, family, method, key, 
     assert any(f"`{key}`" in reason for reason in without.unknown_because)
 
 
-@pytest.mark.parametrize("key", ["volume", "area", "location", "below_ground"])
+@pytest.mark.parametrize("key", ["volume", "area", "location", "below_ground", "ventilation"])
 def test_a_missing_input_of_the_alternative_is_named(key):
-    """It needs volume, area, location and whether it lies below ground."""
+    """It needs volume, area, location, ventilation and whether it lies below ground."""
     found = quantity.alternative(find("R134a"), room(**{key: None}))
 
     assert [limit.limit_kg for limit in found] == [None, None]
     assert all(any(f"`{key}`" in reason for reason in limit.unknown_because) for limit in found)
+
+
+def test_the_alternative_counts_on_ventilation():
+    """Without any, only the concentration limit of a lowest floor is left."""
+    found = quantity.alternative(find("R134a"), room(ventilation="none", below_ground=True))
+
+    assert [limit.limit_kg for limit in found] == [pytest.approx(21.0), None, None]
+    assert "the case says there is none" in " ".join(found[1].unknown_because)
 
 
 @pytest.mark.parametrize(
@@ -399,6 +408,26 @@ def test_a_room_rule_does_not_speak_on_a_plant_outside_the_room():
 
     assert limit.limit_kg is None
     assert "machinery room" in limit.unknown_because[0]
+
+
+@pytest.mark.parametrize("name", ["R152a", "R290", "R600a"])
+@pytest.mark.parametrize("comfort", [True, False])
+def test_a_concentration_is_not_enough_for_classes_2_and_3(name, comfort):
+    """ASHRAE 15 keeps them to few places without the authority (from memory): no limit says below, the figure stays."""
+    limit = one(ashrae15.limits(find(name), room(comfort=comfort)), "rcl")
+
+    assert limit.limit_kg is None
+    assert "authority" in " ".join(limit.unknown_because)
+    assert limit.lines
+
+
+def test_class_b_is_restricted_in_comfort_use():
+    """R123 (B1, 57 g/m3) has its concentration limit elsewhere; in comfort use, or if it is not stated, it has none."""
+    found = {use: one(ashrae15.limits(find("R123"), room(comfort=use)), "rcl") for use in (True, False, None)}
+
+    assert found[False].limit_kg == pytest.approx(5.7)
+    assert "restricts use" in " ".join(found[True].unknown_because)
+    assert "`comfort` in [room]" in found[None].unknown_because
 
 
 def test_ammonia_is_left_to_its_own_standard():
