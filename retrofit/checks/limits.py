@@ -10,12 +10,12 @@ FILMS = (
     "case, and as clean as today"
 )
 HARDWARE = "motor current, expansion valves, distributors, pipes, oil return, receiver, relief valves and seals"
-ALWAYS = (
-    "age and condition of the plant, and what its makers allow",
-    "charge against room volume, ventilation, detection and electrical equipment",
-    "law, listings and permits at the place of the plant, now and over its remaining life",
-    "a year of operation: energy, emissions and cost",
-)
+ROOM = "charge against room volume, "
+ROOM_ELSE = "ventilation, detection and electrical equipment"
+LAW = "law, listings and permits at the place of the plant, now and over its remaining life"
+LAW_ELSE = "permits and approvals, and law that the tables used do not hold: they are no legal advice"
+CONDITION = "age and condition of the plant, and what its makers allow"
+YEAR = "a year of operation: energy, emissions and cost"
 
 
 def not_checked(comparison: Comparison) -> tuple[str, ...]:
@@ -26,7 +26,16 @@ def not_checked(comparison: Comparison) -> tuple[str, ...]:
     Returns: Sentences without first capital and full stop.
     """
     entries = [entry for entry in comparison.candidates if entry.status == "ok"]
-    return (*_exchangers(entries), *_hardware(entries), *_conditions(entries), *ALWAYS)
+    room = comparison.case.room
+    return (
+        *_exchangers(entries),
+        *_hardware(entries),
+        *_conditions(entries),
+        CONDITION,
+        ROOM_ELSE if room is not None and room.volume_m3 is not None else ROOM + ROOM_ELSE,
+        LAW if comparison.law is None else LAW_ELSE,
+        YEAR,
+    )
 
 
 def _exchangers(entries: list[Entry]) -> tuple[str, ...]:

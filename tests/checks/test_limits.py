@@ -90,7 +90,20 @@ def test_components_without_data_are_named_and_others_are_not(limits_of):
 
 
 def test_what_is_never_checked_is_told_with_every_case(limits_of):
-    """Room, law, the year and the condition of the plant."""
-    for _, text in (limits_of(), limits_of('highest_ambient = "32 degC"', EXCHANGERS)):
-        for words in ("room volume", "law, listings", "energy, emissions and cost", "condition of the plant"):
+    """Ventilation, permits, the year and the condition of the plant."""
+    law, room = '[law]\njurisdiction = "EU"\n', '[room]\nvolume = "6000 m3"\n'
+    for _, text in (limits_of(), limits_of('highest_ambient = "32 degC"', EXCHANGERS + law + room)):
+        for words in ("ventilation, detection", "permits", "energy, emissions and cost", "condition of the plant"):
             assert words in text
+
+
+def test_law_and_room_are_named_until_the_case_says_where_the_plant_is(limits_of):
+    """Without them charge against room and law are open; with them what the tables do not hold is."""
+    law, room = '[law]\njurisdiction = "EU"\n', '[room]\nvolume = "6000 m3"\n'
+    _, without = limits_of()
+    _, given = limits_of("", law + room)
+
+    assert "room volume" in without
+    assert "law, listings" in without
+    assert "room volume" not in given
+    assert "law that the tables used do not hold" in given

@@ -1,9 +1,16 @@
 """The report in a real browser: on a telephone, a desk, light and dark, on paper, for a screen reader."""
 
 import re
+from pathlib import Path
 
 import pytest
 
+from retrofit.case import read_case
+from retrofit.checks import assess
+from retrofit.report import render_html
+from retrofit.study import compare
+
+ROOT = Path(__file__).resolve().parents[2]
 pytestmark = pytest.mark.browser
 SHOWN = ["harbour-market", "freezer-store", "coast-heat-pump"]
 HEADINGS = [
@@ -12,6 +19,16 @@ HEADINGS = [
     "State points, and how to check them by hand", "Assumptions", "How far the model can be trusted",
     "Limits: what was not checked", "Terms", "Sources",
 ]  # fmt: skip
+
+
+@pytest.fixture(scope="module")
+def many(tmp_path_factory, made_at):
+    """Return the page of the harbour market with 12 candidates: all bases, hardware and readings."""
+    names = "R448A R449A R407A R407C R407F R407H R452A R454A R454C R455A R513A R290".split()
+    text = (ROOT / "cases" / "harbour-market.toml").read_text(encoding="utf-8")
+    path = tmp_path_factory.mktemp("many") / "many.toml"
+    path.write_text(re.sub(r"candidates = \[.*?\]", f"candidates = {names}", text), encoding="utf-8")
+    return render_html(assess(compare(read_case(path))), made_at=made_at)
 
 
 @pytest.fixture
@@ -145,3 +162,34 @@ def test_print_is_light_whatever_the_reader_s_mode(opened):
 
     assert page.evaluate("getComputedStyle(document.body).color") == "rgb(0, 0, 0)"
     assert page.evaluate("getComputedStyle(document.body).backgroundColor") == "rgb(255, 255, 255)"
+
+
+@pytest.mark.parametrize("width", [320, 1280])
+def test_twelve_candidates_stay_within_the_window(width, many, browser):
+    """With every basis and the hardware of 12 candidates nothing scrolls sideways, and axe finds no violation."""
+    from axe_playwright_python.sync_playwright import Axe
+
+    context = browser.new_context(viewport={"width": width, "height": 900})
+    page = context.new_page()
+    page.set_content(many)
+    widest = page.evaluate("document.scrollingElement.scrollWidth")
+    found = Axe().run(page).response["violations"]
+    context.close()
+
+    assert widest <= width
+    assert [(item["id"], item["nodes"][0]["html"][:90]) for item in found] == []
+
+
+def test_tables_of_the_hardware_fit_the_paper(many, browser):
+    """In print no table of verdicts or of a component of 12 candidates is wider than an A4 page leaves room for."""
+    context = browser.new_context(viewport={"width": 688, "height": 900})  # 182 mm
+    page = context.new_page()
+    page.set_content(many)
+    page.emulate_media(media="print")
+    rights = page.evaluate(
+        "[...document.querySelectorAll('#hardware table')].map(e => e.getBoundingClientRect().right)"
+    )
+    context.close()
+
+    assert len(rights) > 10
+    assert max(rights) <= 689

@@ -183,5 +183,5 @@ def test_unknown_is_set_off_without_colour(page_of):
     html = page_of("harbour-market", "si")
 
     assert '<span class="verdict-mark unknown">unknown</span>' in html
-    assert re.search(r"\.verdict-mark\.unknown, \.verdict-mark\.not-judged \{[^}]*dashed", html)
+    assert re.search(r"\.verdict-mark\.unknown, \.verdict-mark\.not-judged \{[^}]*dotted", html)
     assert re.search(r"\.verdict-mark\.replace \{[^}]*6px solid", html)
