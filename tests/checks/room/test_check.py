@@ -289,8 +289,10 @@ def test_change_of_class_and_lists_go_with_every_candidate(results):
 
 
 def test_a_step_between_flammable_refrigerants_is_work(case_of):
-    """From R1234yf to R1234ze(E) both burn: not a stop by class, but work with reasons."""
-    (candidate,) = assess(compare(case_of("R1234yf", ["R1234ze(E)"]))).candidates
+    """From R1234yf to R1234ze(E) both burn: not a stop by class, but work with reasons; the room is asked anew."""
+    result = assess(compare(case_of("R1234yf", ["R1234ze(E)"])))
+    (candidate,) = result.candidates
+    assert (levels(result.existing, "room-charge"), levels(candidate, "room-charge")) == ([], ["unknown"])
     (finding,) = [item for item in candidate.findings if item.code == "class-change"]
 
     assert finding.level == "work"
