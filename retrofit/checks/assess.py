@@ -15,6 +15,28 @@ from retrofit.study import Comparison, Entry, Finding
 LEVELS = ("stop", "unknown", "work", "note")
 VERDICTS = {"stop": "does not suit", "unknown": "cannot be said", "work": "suits with work"}
 SUITS = "suits"
+# The order in which options die in practice: what is asked first is told first. A code counts from its beginning.
+ORDER = (
+    "not-computed",
+    "law",
+    "ozone",
+    "high-side",
+    "standstill",
+    "relief",
+    "near-critical",
+    "safety-class",
+    "room",
+    "glide",
+    "vacuum",
+    "discharge",
+    "pressure-ratio",
+    "motor",
+    "compressor",
+    "metals",
+    "oil",
+    "capacity",
+    "condenser",
+)
 
 
 def assess(comparison: Comparison, on: datetime.date | None = None) -> Comparison:
@@ -42,8 +64,14 @@ def _assessed(comparison: Comparison, entry: Entry) -> Entry:
     found += room_findings(comparison, entry, room)
     if entry.status != "ok":
         found.insert(0, _not_computed(entry))
-    found.sort(key=lambda finding: LEVELS.index(finding.level))
+    found.sort(key=_place)
     return replace(entry, findings=tuple(found), hardware=rows, room=room, verdict=verdict(found))
+
+
+def _place(finding: Finding) -> tuple[int, int]:
+    """Return where a finding stands: by level, then in the order in which options die."""
+    asked = (place for place, code in enumerate(ORDER) if finding.code.startswith(code))
+    return LEVELS.index(finding.level), next(asked, len(ORDER))
 
 
 def _not_computed(entry: Entry) -> Finding:

@@ -104,7 +104,7 @@ def capacity(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
         return
     reached, needed, machine = found
     share = reached / needed
-    level = limit.level_below(share)
+    level = limit.level_below(round(share, 2))  # a shortfall that no whole percent shows is none
     if level is None:
         return
     doubt = f" The shortfall lies within the ±{band:.0%} of the model." if share > 1.0 - band else ""
@@ -120,13 +120,14 @@ def capacity(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
 
 def compressor_data(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
     """Note where a refrigerant leaves the range that the data of the compressor cover."""
-    if entry.plant is None or entry.plant.is_covered:
+    point = entry.plant.full if entry.plant else entry.duty
+    if entry.is_covered is not False or point is None:
         return
     yield Finding(
         "compressor-data",
         "note",
         "Outside the data of the compressor",
-        f"pressure ratio {entry.plant.full.pressure_ratio:.1f} at {entry.plant.full.p_evap_Pa / 1e5:.2f} bar a.",
+        f"pressure ratio {point.pressure_ratio:.1f}, evaporating at {point.p_evap_Pa / 1e5:.2f} bar a.",
         "The efficiencies there are carried on from the nearest data; ask the maker for data with this refrigerant.",
         "range of the points or of the polynomial in the case",
     )

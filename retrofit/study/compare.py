@@ -188,6 +188,7 @@ def _solved(today: _Today, entry: Entry, behaviour: Fluid) -> Entry:
             installed = run_installed(today.plant, behaviour)
         except NoSolutionError as error:
             reason = error.message
+    covered = bool(today.model.covers(cycle.pressure_ratio, cycle.p_suction_Pa))
     return replace(
         entry,
         status="ok",
@@ -199,6 +200,7 @@ def _solved(today: _Today, entry: Entry, behaviour: Fluid) -> Entry:
         points=tuple(_point(state) for state in state_points(behaviour, cycle)),
         lines=chart_lines(behaviour),
         T_limit_K=behaviour.T_limit_K,
+        is_covered=covered and (installed is None or installed.is_covered),
     )
 
 

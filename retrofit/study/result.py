@@ -280,6 +280,7 @@ class Entry:
         relative: Ratios to the existing refrigerant.
         T_discharge_difference_K: Discharge temperature against the existing refrigerant.
         T_limit_K: Up to where the components' equations of state are stated to hold.
+        is_covered: Whether the data of the compressor reach to every point it is solved at.
         hardware_numbers: What the components of the plant see with it, beside today's; None if not computed.
         cautions: From its safety class; always there.
         law: What the tables of law say; None until looked into, or without a jurisdiction or a table for it.
@@ -302,6 +303,7 @@ class Entry:
     relative: Mapping[str, float] = field(default_factory=dict)
     T_discharge_difference_K: float | None = None
     T_limit_K: float | None = None
+    is_covered: bool | None = None
     hardware_numbers: HardwareNumbers | None = None
     law: LawCheck | None = None
     findings: tuple[Finding, ...] = ()
