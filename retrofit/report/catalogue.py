@@ -101,14 +101,22 @@ def catalogue_text(refrigerants: Iterable[Refrigerant], strong: Callable[[str], 
         Column("Dew", "°C, 1 atm"),
         Column("Composition", "mass %", is_words=True),
     ]
-    rows = [_list_row(item) for item in refrigerants]
+    chosen = list(refrigerants)
     heading = strong("Catalogue: ASHRAE 34 class, GWP over 100 years by IPCC edition, boiling points at 1 atm")
-    note = (
-        f"{MARK_MEANS}.\n"
-        "retrofit refrigerants NAME shows source, basis, disputes and cautions of each. Nothing here\n"
-        "replaces ASHRAE 34 and 15, ISO 817 and 5149 or EN 378, local code and licensed practice."
+    table = text_table(heads, [_list_row(item) for item in chosen])
+    note = f"{MARK_MEANS}.\nretrofit refrigerants NAME shows source, basis, disputes and cautions of each."
+    return f"{_class_cautions(chosen, strong)}\n\n{heading}\n{table}\n\n{note}"
+
+
+def _class_cautions(chosen: Sequence[Refrigerant], strong: Callable[[str], str]) -> str:
+    """Return what each class in a list means, a line each, and who decides."""
+    titles = dict.fromkeys((first.level.upper(), first.title) for first in (cautions_for(item)[0] for item in chosen))
+    lines = [f"{level:<8} {title}" for level, title in sorted(titles, key=lambda pair: pair[1])]
+    decides = (
+        "ASHRAE 34 and 15, ISO 817 and 5149 or EN 378, local code and licensed practice decide whether and how a\n"
+        "refrigerant is used; nothing here replaces them."
     )
-    return f"{heading}\n{text_table(heads, rows)}\n\n{note}"
+    return "\n".join([strong("Cautions"), *lines, decides])
 
 
 def _list_row(item: Refrigerant) -> list[str]:

@@ -184,6 +184,7 @@ def _row(entry: Entry) -> dict[str, Any]:
         "safety_class": entry.refrigerant.safety_class.value,
         **gwp_values(entry.refrigerant),
         "model_grade": entry.grade.word if entry.grade else None,
+        "cautions": "; ".join(caution.title for caution in entry.cautions),
     }
     for basis in ("duty", "compressor"):
         found = getattr(entry, basis)
