@@ -12,7 +12,7 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from retrofit.errors import OutsideValidRangeError
-from retrofit.properties.grid import FloatArray
+from retrofit.properties.grid import Curve, FloatArray
 from retrofit.properties.table import Tables, greatest_subcooling
 
 KELVIN = 273.15
@@ -117,9 +117,7 @@ class Fluid:
             p_Pa: Pressure. [Pa]
         Raises: OutsideValidRangeError outside the range of the bubble line.
         """
-        p = self._pressure_inside(p_Pa, self.tables.bubble.x, "bubble pressure")
-        T, h, s, ln_rho = self.tables.bubble(np.log(p), 0, 1, 2, 3)
-        return State(p, T, h, s, np.exp(ln_rho), np.zeros_like(T), np.zeros_like(T))
+        return self._saturated(p_Pa, self.tables.bubble, "bubble pressure", 0.0)
 
     def dew(self, p_Pa: ArrayLike) -> State:
         """Return the saturated vapour at a pressure.
@@ -128,9 +126,12 @@ class Fluid:
             p_Pa: Pressure. [Pa]
         Raises: OutsideValidRangeError outside the range of the dew line.
         """
-        p = self._pressure_inside(p_Pa, self.tables.dew.x, "dew pressure")
-        T, h, s, ln_rho = self.tables.dew(np.log(p), 0, 1, 2, 3)
-        return State(p, T, h, s, np.exp(ln_rho), np.ones_like(T), np.ones_like(T))
+        return self._saturated(p_Pa, self.tables.dew, "dew pressure", 1.0)
+
+    def _saturated(self, p_Pa: ArrayLike, line: Curve, what: str, quality: float) -> State:
+        p = self._pressure_inside(p_Pa, line.x, what)
+        T, h, s, ln_rho = line(np.log(p), 0, 1, 2, 3)
+        return State(p, T, h, s, np.exp(ln_rho), np.full_like(T, quality), np.full_like(T, quality))
 
     def dew_slope(self, p_Pa: ArrayLike) -> FloatArray:
         """Return the slope of the dew temperature along ln p. [K]
