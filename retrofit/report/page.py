@@ -18,7 +18,10 @@ from retrofit.report.guard import POLICY
 from retrofit.report.hardware import Hardware, hardware
 from retrofit.report.inputs import Input, LeftOut, Taken, defaults, fixed, inputs, missing
 from retrofit.report.judging import Judged, Shared, judged, spelled, threshold_sources
+from retrofit.report.law import LawPart, law_part
 from retrofit.report.plant import WHY_SAME_COOLING, has_plant
+from retrofit.report.provenance import Traced, traced_values
+from retrofit.report.room import RoomPart, has_room, room_part
 from retrofit.report.states import Portrait, enthalpy_note, portraits
 from retrofit.report.table import Table
 from retrofit.report.values import UsedSource, environment_table, used_sources
@@ -26,7 +29,7 @@ from retrofit.study import Comparison, Entry
 from retrofit.units import MISSING, UnitSystem
 
 SYSTEM_WORDS = {"si": "metric units", "ip": "inch-pound units"}
-# Sections in their order, by id; the one on the plant as found only if there are readings.
+# Sections in their order, by id; those on readings, room and law only where the case has such data.
 SECTIONS = {
     "answer": "Answer",
     "cautions": "Cautions",
@@ -34,6 +37,8 @@ SECTIONS = {
     "comparison": "Comparison",
     "charts": "Charts",
     "hardware": "Hardware",
+    "room": "Charge and room",
+    "law": "Law",
     "findings": "Findings",
     "states": "State points",
     "assumptions": "Assumptions",
@@ -97,6 +102,8 @@ class Page:
     charts: tuple[figures.Drawing, ...]
     enthalpy_note: str
     hardware: Hardware
+    room: RoomPart | None
+    law: LawPart | None
     portraits: tuple[Portrait, ...]
     inputs: tuple[Input, ...]
     defaults: tuple[Taken, ...]
@@ -105,6 +112,8 @@ class Page:
     grades: tuple[Graded, ...]
     difference_unit: str
     temperature_unit: str
+    mass_unit: str
+    traced: tuple[Traced, ...]
     sources: tuple[UsedSource, ...]
     check_sources: tuple[str, ...]
     not_checked: tuple[str, ...]
@@ -121,7 +130,7 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
     case = comparison.case
     (existing, *candidates), shared = judged(comparison)
     solved = any(entry.duty is not None for entry in comparison.entries)
-    contents = tuple(item for item in SECTIONS.items() if item[0] != "found" or comparison.baseline is not None)
+    contents = _contents(comparison)
     return Page(
         policy=POLICY,
         title=plain(case.title),
@@ -150,6 +159,8 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
         charts=_charts(comparison, units) if solved else (),
         enthalpy_note=enthalpy_note(units),
         hardware=hardware(comparison, units),
+        room=room_part(comparison, units),
+        law=law_part(comparison, units),
         portraits=portraits(comparison, units),
         inputs=inputs(case, units),
         defaults=defaults(case, units),
@@ -158,10 +169,22 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
         grades=tuple(_graded(entry, units) for entry in comparison.entries),
         difference_unit=units.label("temperature difference"),
         temperature_unit=units.label("temperature"),
+        mass_unit=units.label("mass"),
+        traced=traced_values(comparison, units),
         sources=used_sources(comparison),
         check_sources=threshold_sources(comparison),
         not_checked=not_checked(comparison),
     )
+
+
+def _contents(comparison: Comparison) -> tuple[tuple[str, str], ...]:
+    """Return the sections that this result has, in their order."""
+    is_there = {
+        "found": comparison.baseline is not None,
+        "room": has_room(comparison),
+        "law": comparison.law is not None,
+    }
+    return tuple(item for item in SECTIONS.items() if is_there.get(item[0], True))
 
 
 def plain(text: str) -> str:

@@ -16,6 +16,7 @@ from retrofit.report.terminal_plant import (
     plant_text,
     row_names,
 )
+from retrofit.report.terminal_site import law_text, room_text
 from retrofit.report.text_table import Column, paragraph, text_table
 from retrofit.study import Comparison, Entry
 from retrofit.units import UnitSystem, listed, shown
@@ -90,14 +91,16 @@ def _cautions(comparison: Comparison, columns: int, strong: Emphasis) -> list[st
 def _tables(comparison: Comparison, units: UnitSystem, columns: int, strong: Emphasis) -> list[str]:
     solved = [entry for entry in comparison.entries if entry.duty is not None]
     refrigerants = _refrigerants(comparison.entries, strong)
+    site = [room_text(comparison, units, columns, strong), law_text(comparison, units, columns, strong)]
     if not solved:
-        return [refrigerants]
+        return [refrigerants, *site]
     return [
         _duty(comparison, solved, units, strong),
         _compressor(comparison, solved, units, strong),
         plant_text(comparison, units, columns, strong),
         refrigerants,
         hardware_text(comparison, columns, strong),
+        *site,
     ]
 
 

@@ -22,9 +22,12 @@ FIELDS = {
     "lfl_kg_per_m3": "LFL",
     "rcl_kg_per_m3": "RCL",
     "practical_limit_kg_per_m3": "practical limit",
+    "atel_odl_kg_per_m3": "ATEL/ODL",
     "oel_ppm": "OEL",
     "bubble_1atm_K": "bubble point at 1 atm",
     "dew_1atm_K": "dew point at 1 atm",
+    "autoignition_K": "auto-ignition temperature",
+    "molar_mass_kg_per_mol": "molar mass",
     "lubricants": "usual oils",
 }
 
@@ -68,7 +71,7 @@ def environment_table(comparison: Comparison, units: UnitSystem) -> Table:
 
 def gwp_rows(entries: Sequence[Entry], bases: Iterable[str], notes: Notes) -> tuple[Row, ...]:
     """Return one row for each GWP basis, named by it."""
-    return tuple(value_row(f"GWP, {GWP_BASES[basis]}", "", entries, basis, notes, _potential) for basis in bases)
+    return tuple(value_row(f"GWP, {GWP_BASES[basis]}", "", entries, basis, notes, potential_text) for basis in bases)
 
 
 def value_row(
@@ -106,7 +109,12 @@ def _three_digits(value: float) -> str:
     return format_number(value, 0) if value >= 1000.0 else f"{value:.3g}"
 
 
-def _potential(number: object) -> str:
+def potential_text(number: object) -> str:
+    """Return a warming potential as sources print it.
+
+    Args:
+        number: The potential. [-]
+    """
     value = float(number)  # type: ignore[arg-type]
     return format_number(value, 0) if value >= 10.0 else _three_digits(value)
 

@@ -15,7 +15,8 @@ pytestmark = pytest.mark.browser
 SHOWN = ["harbour-market", "freezer-store", "coast-heat-pump"]
 HEADINGS = [
     "Question and answer", "Cautions by safety class", "The plant as found", "Comparison on three bases", "Charts",
-    "Hardware, component by component", "Findings and verdict for each refrigerant",
+    "Hardware, component by component", "Charge against the room", "What the law asks, and when",
+    "Findings and verdict for each refrigerant",
     "State points, and how to check them by hand", "Assumptions", "How far the model can be trusted",
     "Limits: what was not checked", "Terms", "Sources",
 ]  # fmt: skip

@@ -64,7 +64,7 @@ def test_without_readings_there_is_no_section_and_no_gap(assessed, made_at, read
     assert "3 Comparison on three bases" in page.headings
     assert "found" not in page.ids
     numbers = [int(heading.split(" ")[0]) for heading in page.headings if heading[0].isdigit()]
-    assert numbers == list(range(1, 13))
+    assert numbers == list(range(1, 15))
     limits = next(heading for heading in page.headings if "Limits" in heading).split(" ")[0]
     assert f"Cautions: section 2. Limits: section {limits}." in html
     assert "The plant as found" not in comparison_text(replace(assessed("harbour-market"), baseline=None), SI, 100)

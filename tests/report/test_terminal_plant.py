@@ -101,7 +101,7 @@ def test_every_verdict_is_shown_within_the_columns(assessed, columns):
     """Components are rows; refrigerants that do not fit beside each other go on below, none left out."""
     result = assessed("desert-split")
     text = comparison_text(result, SI, columns)
-    part = text[text.index("\nHardware: ") : text.index("What the checks found")]
+    part = text[text.index("\nHardware: ") : text.index("Charge against the room")]
     tables = [lines for lines in (piece.split("\n") for piece in part.split("\n\n")) if any(RULE in x for x in lines)]
     heads, rows = [], {}
     for lines in tables:

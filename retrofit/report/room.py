@@ -1,0 +1,334 @@
+"""The charge against the room in the report: limits with their working, what is asked, and what a class asks."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+from dataclasses import dataclass, replace
+
+from retrofit.case import Case
+from retrofit.report.classes import ClassBlock, Step, class_blocks, steps
+from retrofit.report.gathering import basis_text, gathered, nameless, names
+from retrofit.report.judging import spelled
+from retrofit.study import Comparison, Entry
+from retrofit.study.room import UNKNOWN, Question, RoomCheck, WorkedLimit
+from retrofit.units import UnitSystem
+
+NOT_GIVEN = "not given"
+ROLES = {
+    "limit": "It counts.",
+    "alternative": "Shown beside the limits; it decides nothing.",
+    "product standard": "Of the product standard; it decides nothing.",
+}
+
+
+@dataclass(frozen=True)
+class RoomLine:
+    """One refrigerant against its limit, as texts; what is not known reads "unknown"."""
+
+    name: str
+    safety_class: str
+    expected: str
+    span: str
+    limit: str
+    margin: str
+    verdict: str
+    why: str
+
+
+@dataclass(frozen=True)
+class LimitLine:
+    """One limit of some refrigerants: the figure, what sets it, its working, what is missing, and what is doubtful."""
+
+    about: str
+    limit: str
+    decided_by: str
+    working: tuple[str, ...]
+    missing: tuple[str, ...]
+    open_because: str
+    flags: tuple[str, ...]
+
+
+@dataclass(frozen=True)
+class LimitBlock:
+    """One method with every refrigerant it was worked for."""
+
+    heading: str
+    role: str
+    formula: str
+    symbols: tuple[str, ...]
+    edition: str
+    source: str
+    basis: str
+    applies: str
+    lines: tuple[LimitLine, ...]
+
+
+@dataclass(frozen=True)
+class Number:
+    """The number of a question: for whom, its value, the working, and what is missing."""
+
+    about: str
+    value: str
+    lines: tuple[str, ...]
+    missing: tuple[str, ...]
+
+
+@dataclass(frozen=True)
+class Asked:
+    """One thing to ask, with its numbers; `about` is empty if it is asked of every refrigerant."""
+
+    topic: str
+    text: str
+    about: str
+    numbers: tuple[Number, ...]
+    source: str
+    basis: str
+
+
+@dataclass(frozen=True)
+class RoomPart:
+    """Everything on charge and room.
+
+    Attributes:
+        code: Which rules, in words.
+        facts: The room as (what, value).
+        charge_of: Whose charge it is, in words.
+        lines: One for each refrigerant.
+        limits: Every method with its working.
+        questions, machinery: What is asked; `machinery` is empty where nothing asks for a machinery room.
+        steps: Changes of safety class.
+        classes: What each class asks to look at.
+    """
+
+    code: str
+    facts: tuple[tuple[str, str], ...]
+    charge_of: str
+    lines: tuple[RoomLine, ...]
+    limits: tuple[LimitBlock, ...]
+    questions: tuple[Asked, ...]
+    machinery: tuple[Asked, ...]
+    steps: tuple[Step, ...]
+    classes: tuple[ClassBlock, ...]
+
+
+def has_room(comparison: Comparison) -> bool:
+    """Say whether the case describes a room, so that there is something to show.
+
+    Args:
+        comparison: The result.
+    """
+    return comparison.case.room is not None or comparison.case.machinery_room is not None
+
+
+def room_part(comparison: Comparison, units: UnitSystem) -> RoomPart | None:
+    """Return what stands in the report on charge and room; None if the case describes no room.
+
+    Args:
+        comparison: An assessed result.
+        units: The reader's units.
+    """
+    if not has_room(comparison):
+        return None
+    checks = [(entry, entry.room) for entry in comparison.entries if entry.room is not None]
+    return RoomPart(
+        code_text(comparison.case),
+        _facts(comparison.case, units),
+        charge_of_text(checks[0][1]) if checks else "",
+        room_lines(comparison, units),
+        _limit_blocks(checks, units),
+        _asked(((entry, item) for entry, check in checks for item in check.questions), len(checks), units),
+        _asked(((entry, item) for entry, check in checks for item in check.machinery_room), len(checks), units),
+        steps(comparison),
+        class_blocks(comparison),
+    )
+
+
+def code_text(case: Case) -> str:
+    """Return by which rules the charge was set against the room, in one sentence.
+
+    Args:
+        case: The case.
+    """
+    code = case.law.code if case.law else None
+    if code is None:
+        return "By ASHRAE 15 and by EN 378, which have to agree: `code` in [law] does not choose."
+    return "By ASHRAE 15 and by EN 378; the stricter counts." if code == "both" else f"By {code}, as the case chooses."
+
+
+def charge_of_text(check: RoomCheck) -> str:
+    """Return whose charge is set against the room, in one sentence.
+
+    Args:
+        check: Of one refrigerant; it is the same for all.
+    """
+    if check.charge_of == "largest circuit":
+        return "Charge of the largest independent circuit."
+    if check.charge_of == "whole plant":
+        return "Charge of the whole plant, for want of `largest_circuit` in [room]: one leak lets out no more."
+    return "The charge is not known: give `charge` in [plant] or `largest_circuit` in [room]."
+
+
+def room_lines(comparison: Comparison, units: UnitSystem) -> tuple[RoomLine, ...]:
+    """Return each refrigerant against its limit.
+
+    Args:
+        comparison: An assessed result.
+        units: The reader's units.
+    """
+    return tuple(_line(entry, entry.room, units) for entry in comparison.entries if entry.room is not None)
+
+
+def mass_text(value: float | None, units: UnitSystem) -> str:
+    """Return a mass without its unit, with the digits of its size; "unknown" if it is not known.
+
+    Args:
+        value: The mass. [kg]
+        units: The reader's units.
+    """
+    return units.text("mass", value, missing=UNKNOWN)
+
+
+def _line(entry: Entry, check: RoomCheck, units: UnitSystem) -> RoomLine:
+    low, high, limit = check.lowest_kg, check.highest_kg, check.deciding
+    spread = low is not None and high is not None and low < high
+    return RoomLine(
+        entry.refrigerant.display_name,
+        entry.refrigerant.safety_class.text or "not stated",
+        mass_text(check.expected_kg, units),
+        f"{mass_text(low, units)} to {mass_text(high, units)}" if spread else mass_text(high, units),
+        mass_text(limit.limit_kg if limit else None, units),
+        units.text("mass", check.margin_kg, signed=True, missing=UNKNOWN),
+        check.verdict,
+        _why(entry, check),
+    )
+
+
+def _why(entry: Entry, check: RoomCheck) -> str:
+    """Return which limit decides, what sets it and what is doubtful about it; of an unknown what is missing."""
+    limit = check.deciding
+    missing = f"Missing: {nameless(entry, '; '.join(check.unknown_because))}." if check.unknown_because else ""
+    if limit is None:
+        return missing or "No limit is known."
+    said = [f"{limit.code_family}, {limit.title[:1].lower()}{limit.title[1:]}; set by the {limit.decided_by}"]
+    said += [nameless(entry, flag) for flag in limit.flags]
+    if limit.basis == "memory" and not any("the rule is from memory" in flag for flag in limit.flags):
+        said.append("the rule is from memory")
+    return " ".join([*(f"{text[:1].upper()}{text[1:]}." for text in said), missing]).strip()
+
+
+def _facts(case: Case, units: UnitSystem) -> tuple[tuple[str, str], ...]:
+    """Return what the case says of the rooms, what it does not say included."""
+    room, machinery = case.room, case.machinery_room
+    found = []
+    if room is not None:
+        access, location = room.access_category, room.location_class
+        found += [
+            ("Room", room.name or NOT_GIVEN),
+            ("Volume", _given(units, "room volume", room.volume_m3)),
+            ("Floor area", _given(units, "area", room.area_m2)),
+            ("Access", f"category {access}" if access else NOT_GIVEN),
+            ("Location", f"class {location}" if location else NOT_GIVEN),
+            ("Below ground", _flag(room.below_ground)),
+            ("For comfort", _flag(room.comfort)),
+            ("Occupancy", room.occupancy or NOT_GIVEN),
+            ("Factory-sealed", _flag(room.sealed)),
+            ("Ventilation of the room", room.ventilation or NOT_GIVEN),
+        ]
+    if machinery is not None:
+        found += [
+            ("Machinery room", _given(units, "room volume", machinery.volume_m3)),
+            ("Its emergency ventilation", _given(units, "volume flow", machinery.ventilation_m3_per_s)),
+            ("Its detector", _flag(machinery.detector)),
+        ]
+    return tuple(found)
+
+
+def _given(units: UnitSystem, kind: str, value: float | None) -> str:
+    return NOT_GIVEN if value is None else units.with_unit(kind, value)
+
+
+def _flag(value: bool | None) -> str:
+    return NOT_GIVEN if value is None else "yes" if value else "no"
+
+
+# Limits
+
+
+def _limit_blocks(checks: Iterable[tuple[Entry, RoomCheck]], units: UnitSystem) -> tuple[LimitBlock, ...]:
+    """Return the methods, those that count first, each with the refrigerants it was worked for."""
+    every = [(entry, limit) for entry, check in checks for limit in check.limits]
+    blocks: dict[tuple[str, ...], list[tuple[Entry, LimitLine]]] = {}
+    heads: dict[tuple[str, ...], WorkedLimit] = {}
+    for entry, limit in every:
+        key = (limit.code_family, limit.method, limit.title, limit.formula, limit.applies_because)
+        heads.setdefault(key, limit)
+        blocks.setdefault(key, []).append((entry, _limit_line(entry, limit, units)))
+    order = list(ROLES)
+    ordered = sorted(heads, key=lambda key: order.index(heads[key].role))
+    return tuple(_block(heads[key], blocks[key]) for key in ordered)
+
+
+def _limit_line(entry: Entry, limit: WorkedLimit, units: UnitSystem) -> LimitLine:
+    return LimitLine(
+        "",
+        mass_text(limit.limit_kg, units),
+        limit.decided_by,
+        tuple(nameless(entry, line) for line in limit.lines),
+        tuple(nameless(entry, text) for text in limit.unknown_because),
+        nameless(entry, limit.open_because),
+        tuple(nameless(entry, text) for text in limit.flags),
+    )
+
+
+def _block(limit: WorkedLimit, lines: Iterable[tuple[Entry, LimitLine]]) -> LimitBlock:
+    return LimitBlock(
+        f"{limit.code_family}: {limit.title[:1].lower()}{limit.title[1:]}",
+        ROLES[limit.role],
+        limit.formula,
+        limit.symbols,
+        limit.edition,
+        limit.source,
+        basis_text(limit.basis),
+        limit.applies_because,
+        tuple(replace(line, about=names(entries)) for line, entries in gathered(lines).items()),
+    )
+
+
+# Questions
+
+
+def _asked(pairs: Iterable[tuple[Entry, Question]], count: int, units: UnitSystem) -> tuple[Asked, ...]:
+    """Return questions, each once, with the numbers of the refrigerants they are asked of."""
+    found: dict[tuple[str, str, str, str], list[tuple[Entry, Number]]] = {}
+    for entry, item in pairs:
+        key = (item.topic, spelled(item.text), item.source, item.basis)
+        found.setdefault(key, []).append((entry, _number(entry, item, units)))
+    return tuple(_question(key, numbers, count) for key, numbers in found.items())
+
+
+def _number(entry: Entry, item: Question, units: UnitSystem) -> Number:
+    value = "" if item.value is None else _value(item.kind, item.value, units)
+    lines = tuple(nameless(entry, line) for line in item.lines)
+    return Number("", value, lines, tuple(nameless(entry, text) for text in item.missing))
+
+
+def _value(kind: str, value: float, units: UnitSystem) -> str:
+    """Return a number with its unit; concentrations in air are the thousandth part of a usual density."""
+    if kind != "density":
+        return units.with_unit(kind, value)
+    label = {"si": "g/m³", "ip": "lb/1000 ft³"}[units.name]
+    return f"{1000.0 * float(units.number('density', value)):.3g}\N{NO-BREAK SPACE}{label}"
+
+
+def _question(key: tuple[str, str, str, str], numbers: Iterable[tuple[Entry, Number]], count: int) -> Asked:
+    topic, text, source, basis = key
+    kept = list(numbers)
+    groups = gathered(kept)
+    asked = {entry.refrigerant.designation: entry for entry, _ in kept}
+    about = "" if len(asked) == count else names(asked.values())
+    shown = tuple(
+        replace(number, about="" if len(groups) == 1 else names(entries))
+        for number, entries in groups.items()
+        if number.value or number.lines or number.missing
+    )
+    return Asked(topic, text, about, shown, source, basis_text(basis))
