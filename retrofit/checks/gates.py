@@ -34,6 +34,7 @@ OIL_FAMILIES = {
     "PAG": "polyalkylene glycol",
     "PAO": "polyalphaolefin",
 }
+UNSEEN = 5e-4  # a shortfall that no printed digit shows is none
 NO_SOURCE = "catalogue, which states none"
 Gate = Callable[[Comparison, Entry], Iterator[Finding]]
 
@@ -104,7 +105,7 @@ def capacity(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
         return
     reached, needed, machine = found
     share = reached / needed
-    level = limit.level_below(round(share, 2))  # a shortfall that no whole percent shows is none
+    level = limit.level_below(share + UNSEEN)
     if level is None:
         return
     doubt = f" The shortfall lies within the ±{band:.0%} of the model." if share > 1.0 - band else ""
