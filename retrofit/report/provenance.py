@@ -8,7 +8,7 @@ from dataclasses import dataclass
 from retrofit.refrigerants import GWP_BASES, Value, source
 from retrofit.report.gathering import basis_text, gathered, names
 from retrofit.report.table import NOT_STATED
-from retrofit.report.values import FIELDS, potential_text
+from retrofit.report.values import FIELDS, potential_text, three_digits
 from retrofit.study import Comparison, Entry
 from retrofit.units import UnitSystem
 
@@ -40,7 +40,6 @@ class Origin:
     key: str
     edition: str
     basis: str
-    is_memory: bool
     doubts: tuple[Doubt, ...]
 
 
@@ -81,7 +80,6 @@ def _origin(pairs: list[tuple[Entry, Value]], show: Callable[[Value], str]) -> O
         first.source,
         "" if edition in ("none", "current") else edition,
         basis_text(first.basis, first.confidence),
-        first.basis == "memory",
         tuple(
             Doubt(names(entries), _doubt(note, status), status == "unresolved")
             for (note, status), entries in notes.items()
@@ -103,7 +101,7 @@ def _show(field: str, units: UnitSystem) -> Callable[[Value], str]:
         if value.value is None:
             return "none" if value.status == "not applicable" else NOT_STATED if value.source else NO_FIGURE
         if value.number is None:
-            return value.text
+            return value.text.replace("; ", ", ")  # figures stand apart by semicolons
         return f"{_number(field, value.number, units)}{' ?' if value.status == 'unresolved' else ''}"
 
     return show
@@ -112,7 +110,7 @@ def _show(field: str, units: UnitSystem) -> Callable[[Value], str]:
 def _number(field: str, number: float, units: UnitSystem) -> str:
     if field in CONCENTRATIONS:
         label = {"si": "g/m³", "ip": "lb/1000 ft³"}[units.name]
-        return f"{1000.0 * float(units.number('density', number)):.3g}\N{NO-BREAK SPACE}{label}"
+        return f"{three_digits(1000.0 * float(units.number('density', number)))}\N{NO-BREAK SPACE}{label}"
     if field in TEMPERATURES:
         return units.with_unit("temperature", number, decimals=1)
     if field == "molar_mass_kg_per_mol":

@@ -9,6 +9,7 @@ from retrofit.case import Case
 from retrofit.report.classes import ClassBlock, Step, class_blocks, steps
 from retrofit.report.gathering import basis_text, gathered, nameless, names
 from retrofit.report.judging import spelled
+from retrofit.report.values import three_digits
 from retrofit.study import Comparison, Entry
 from retrofit.study.room import UNKNOWN, Question, RoomCheck, WorkedLimit
 from retrofit.units import UnitSystem
@@ -50,7 +51,7 @@ class LimitLine:
 
 @dataclass(frozen=True)
 class LimitBlock:
-    """One method with every refrigerant it was worked for."""
+    """One method with every refrigerant it was worked for; `flags` are true of all of them."""
 
     heading: str
     role: str
@@ -60,6 +61,7 @@ class LimitBlock:
     source: str
     basis: str
     applies: str
+    flags: tuple[str, ...]
     lines: tuple[LimitLine, ...]
 
 
@@ -75,12 +77,22 @@ class Number:
 
 @dataclass(frozen=True)
 class Asked:
-    """One thing to ask, with its numbers; `about` is empty if it is asked of every refrigerant."""
+    """One thing to ask, with its numbers.
+
+    Attributes:
+        topic, text: What it is about, and the question.
+        about: Of whom; empty if it is asked of every refrigerant.
+        numbers: By refrigerant.
+        lines, missing: What is so of every number, and what is missing for every refrigerant.
+        source, basis: Where it comes from.
+    """
 
     topic: str
     text: str
     about: str
     numbers: tuple[Number, ...]
+    lines: tuple[str, ...]
+    missing: tuple[str, ...]
     source: str
     basis: str
 
@@ -280,7 +292,9 @@ def _limit_line(entry: Entry, limit: WorkedLimit, units: UnitSystem) -> LimitLin
     )
 
 
-def _block(limit: WorkedLimit, lines: Iterable[tuple[Entry, LimitLine]]) -> LimitBlock:
+def _block(limit: WorkedLimit, lines: list[tuple[Entry, LimitLine]]) -> LimitBlock:
+    shared = _shared([line.flags for _, line in lines])
+    alone = ((entry, _without(line, shared)) for entry, line in lines)
     return LimitBlock(
         f"{limit.code_family}: {limit.title[:1].lower()}{limit.title[1:]}",
         ROLES[limit.role],
@@ -290,8 +304,13 @@ def _block(limit: WorkedLimit, lines: Iterable[tuple[Entry, LimitLine]]) -> Limi
         limit.source,
         basis_text(limit.basis),
         limit.applies_because,
-        tuple(replace(line, about=names(entries)) for line, entries in gathered(lines).items()),
+        shared,
+        tuple(replace(line, about=names(entries)) for line, entries in gathered(alone).items()),
     )
+
+
+def _without(line: LimitLine, shared: tuple[str, ...]) -> LimitLine:
+    return replace(line, flags=tuple(flag for flag in line.flags if flag not in shared))
 
 
 # Questions
@@ -317,18 +336,34 @@ def _value(kind: str, value: float, units: UnitSystem) -> str:
     if kind != "density":
         return units.with_unit(kind, value)
     label = {"si": "g/m³", "ip": "lb/1000 ft³"}[units.name]
-    return f"{1000.0 * float(units.number('density', value)):.3g}\N{NO-BREAK SPACE}{label}"
+    return f"{three_digits(1000.0 * float(units.number('density', value)))}\N{NO-BREAK SPACE}{label}"
 
 
-def _question(key: tuple[str, str, str, str], numbers: Iterable[tuple[Entry, Number]], count: int) -> Asked:
+def _question(key: tuple[str, str, str, str], numbers: list[tuple[Entry, Number]], count: int) -> Asked:
     topic, text, source, basis = key
-    kept = list(numbers)
-    groups = gathered(kept)
-    asked = {entry.refrigerant.designation: entry for entry, _ in kept}
+    asked = {entry.refrigerant.designation: entry for entry, _ in numbers}
     about = "" if len(asked) == count else names(asked.values())
+    differ = len({number for _, number in numbers}) > 1
+    lines = _shared([number.lines for _, number in numbers if differ and number.lines])
+    missing = _shared([number.missing for _, number in numbers if differ])
+    groups = gathered((entry, _alone(number, lines, missing)) for entry, number in numbers)
     shown = tuple(
         replace(number, about="" if len(groups) == 1 else names(entries))
         for number, entries in groups.items()
         if number.value or number.lines or number.missing
     )
-    return Asked(topic, text, about, shown, source, basis_text(basis))
+    return Asked(topic, text, about, shown, lines, missing, source, basis_text(basis))
+
+
+def _shared(every: list[tuple[str, ...]]) -> tuple[str, ...]:
+    """Return the texts that stand in all of several lists."""
+    return tuple(text for text in every[0] if all(text in texts for texts in every)) if every else ()
+
+
+def _alone(number: Number, lines: tuple[str, ...], missing: tuple[str, ...]) -> Number:
+    """Return a number without what is so of every refrigerant."""
+    return replace(
+        number,
+        lines=tuple(text for text in number.lines if text not in lines),
+        missing=tuple(text for text in number.missing if text not in missing),
+    )

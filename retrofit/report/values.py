@@ -47,7 +47,7 @@ def environment_table(comparison: Comparison, units: UnitSystem) -> Table:
     density = {"si": "g/m³", "ip": "lb/1000 ft³"}[units.name]  # the thousandth part of the usual unit of density
 
     def mass_per_volume(number: object) -> str:
-        return _three_digits(1000.0 * float(units.number("density", float(number))))  # type: ignore[arg-type]
+        return three_digits(1000.0 * float(units.number("density", float(number))))  # type: ignore[arg-type]
 
     limits = (
         value_row("Safety class", "", entries, "safety_class", notes, str),
@@ -104,8 +104,12 @@ def doubts(value: Value) -> list[str]:
     return texts
 
 
-def _three_digits(value: float) -> str:
-    """Return a number as sources print it: up to three digits, no zeros added behind."""
+def three_digits(value: float) -> str:
+    """Return a number as sources print it: up to three digits, no zeros added behind.
+
+    Args:
+        value: The number. [-]
+    """
     return format_number(value, 0) if value >= 1000.0 else f"{value:.3g}"
 
 
@@ -116,7 +120,7 @@ def potential_text(number: object) -> str:
         number: The potential. [-]
     """
     value = float(number)  # type: ignore[arg-type]
-    return format_number(value, 0) if value >= 10.0 else _three_digits(value)
+    return format_number(value, 0) if value >= 10.0 else three_digits(value)
 
 
 def _plain(number: object) -> str:
