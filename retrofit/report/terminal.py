@@ -160,6 +160,7 @@ def _compressor(comparison: Comparison, solved: Sequence[Entry], units: UnitSyst
 def _refrigerants(entries: Sequence[Entry], strong: Emphasis) -> str:
     columns = [
         Column("", "", is_words=True),
+        Column("Family", "", is_words=True),
         Column("Class", "", is_words=True),
         *(Column("GWP", label) for label in ("AR4", "AR5", "AR6")),
         Column("Model", "", is_words=True),
@@ -168,6 +169,7 @@ def _refrigerants(entries: Sequence[Entry], strong: Emphasis) -> str:
     rows = [
         [
             name,
+            entry.family,
             class_text(entry.refrigerant),
             *(gwp_text(getattr(entry.refrigerant, basis)) for basis in list(GWP_BASES)[:3]),
             entry.grade.word if entry.grade else "none",

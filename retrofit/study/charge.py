@@ -42,9 +42,7 @@ def circuit_charge(case: Case, entry: Entry, existing: Entry) -> CircuitCharge:
     if entry.refrigerant.designation == existing.refrigerant.designation:
         return CircuitCharge(today, today, today, of)
     numbers = entry.hardware_numbers
-    old, new = (
-        (numbers.old.liquid_density_kg_per_m3, numbers.new.liquid_density_kg_per_m3) if numbers else (None, None)
-    )
+    old, new = (numbers.old.liquid_density_kg_per_m3, numbers.new.liquid_density_kg_per_m3) if numbers else (None, None)
     if old is None or new is None:
         name = entry.refrigerant.designation
         return CircuitCharge(None, None, None, of, f"density of the liquid of {name}, which is not computed")
