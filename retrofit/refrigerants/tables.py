@@ -95,9 +95,7 @@ def _parse(cell: str, unit: str) -> Value:
         return Value(cell, "" if unit == "text" else unit)
     si = _SI[unit][0]
     if cell == "NF":
-        return Value(
-            None, si, status="not applicable", note="no lower limit: no flame propagation in the test"
-        )
+        return Value(None, si, status="not applicable", note="no lower limit: no flame propagation in the test")
     if cell[0] in "<>":
         word = "below" if cell[0] == "<" else "above"
         return Value(None, si, status="bound", note=f"stated only as {word} {cell[1:]}")

@@ -215,9 +215,7 @@ def test_a_map_refuses_impossible_efficiencies():
 
 # -- carried to another refrigerant ------------------------------------------------------------------
 
-CATALOGUE = (
-    "medians over all compressor models rated with both, open data set RefrigerationCompressorCurves, 25.2"
-)
+CATALOGUE = "medians over all compressor models rated with both, open data set RefrigerationCompressorCurves, 25.2"
 # A reciprocating machine of ours: volumetric efficiency 1 + c - c r^(1/n), clearance c = 4 %, n = 1.1 (textbook form).
 RATIOS = np.linspace(1.5, 12.0, 12)
 CLEARANCE = [[float(r), 0.65, float(1.04 - 0.04 * r ** (1 / 1.1))] for r in RATIOS]

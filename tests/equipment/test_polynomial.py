@@ -147,9 +147,7 @@ class Machine:
     def __init__(self, name, units="SI"):
         self.fluid = fluid(name)
         evaporating, condensing, return_gas = RANGES[name]
-        s, d = (
-            axis.ravel() for axis in np.meshgrid(np.linspace(*evaporating, 15), np.linspace(*condensing, 15))
-        )
+        s, d = (axis.ravel() for axis in np.meshgrid(np.linspace(*evaporating, 15), np.linspace(*condensing, 15)))
         self.p_suction, p_discharge = self.fluid.p_dew(s + KELVIN), self.fluid.p_dew(d + KELVIN)
         self.ratio = p_discharge / self.p_suction
         self.isentropic, self.volumetric = _true_efficiencies(self.ratio, self.p_suction)
@@ -246,9 +244,7 @@ def test_both_unit_systems_are_the_same_machine(name):
 @pytest.mark.parametrize(("written", "read"), [("SI", "IP"), ("IP", "SI")])
 def test_mixed_unit_systems_are_found(name, written, read):
     """Coefficients of one system read in the other are refused, and the message says which they look like."""
-    with pytest.raises(
-        QuantityError, match=f'in {written} units .* they would be usual: are they "{written}"'
-    ):
+    with pytest.raises(QuantityError, match=f'in {written} units .* they would be usual: are they "{written}"'):
         Machine(name, written).map(units=read)
 
 
@@ -334,9 +330,7 @@ def test_a_faulty_rating_is_named(changes, message):
 
 def test_wet_return_gas_is_named():
     """Return gas colder than the dew point somewhere in the range is refused with both temperatures."""
-    with pytest.raises(
-        QuantityError, match=r"return gas at -10\.0 degC is below the dew point at -9\.6 degC"
-    ):
+    with pytest.raises(QuantityError, match=r"return gas at -10\.0 degC is below the dew point at -9\.6 degC"):
         efficiencies_of(_hand_rating(return_gas_K=KELVIN - 10.0), fluid("R134a"), HAND_SWEPT)
 
 

@@ -58,9 +58,7 @@ def test_no_text_calls_anything_safe(path):
 
 def test_flammable_refrigerants_ask_for_equipment_built_for_them():
     """Only the mildest classes lack the caution that a flammable refrigerant means new equipment."""
-    without = {
-        find(n).safety_class.value for n in designations() if "flammable-new-plant" not in _codes(find(n))
-    }
+    without = {find(n).safety_class.value for n in designations() if "flammable-new-plant" not in _codes(find(n))}
 
     assert without == {"A1", "B1"}
 

@@ -11,9 +11,7 @@ from retrofit.errors import UnknownRefrigerantError
 from retrofit.refrigerants import designations, find, source
 
 
-@pytest.mark.parametrize(
-    "spelling", ["R404A", "r404a", "R-404A", "404A", "404a", " R 404A ", "r-404-a", "R_404A"]
-)
+@pytest.mark.parametrize("spelling", ["R404A", "r404a", "R-404A", "404A", "404a", " R 404A ", "r-404-a", "R_404A"])
 def test_common_spellings_find_the_same(spelling):
     """Case, hyphen, blanks and the leading R do not matter."""
     assert find(spelling).designation == "R404A"
@@ -32,9 +30,7 @@ def test_every_designation_finds_itself(name):
     assert find(find(name).display_name).designation == name
 
 
-@pytest.mark.parametrize(
-    ("name", "shown"), [("R404A", "R-404A"), ("RE170", "R-E170"), ("R1234yf", "R-1234yf")]
-)
+@pytest.mark.parametrize(("name", "shown"), [("R404A", "R-404A"), ("RE170", "R-E170"), ("R1234yf", "R-1234yf")])
 def test_form_for_readers(name, shown):
     """The form for readers has a hyphen after the R."""
     assert find(name).display_name == shown

@@ -45,9 +45,7 @@ def test_how_many_blends_are_checked_on_ar4():
     assert len({row["designation"] for row in read if not row["disagreement"]}) == 48
 
 
-@pytest.mark.parametrize(
-    "row", [row for row in ROWS if row["disagreement"]], ids=lambda row: row["designation"]
-)
+@pytest.mark.parametrize("row", [row for row in ROWS if row["disagreement"]], ids=lambda row: row["designation"])
 def test_a_large_disagreement_stands_beside_the_value(row):
     """Where the printed figure is off by more than 1 and 0.4 %, the value's note says so."""
     value = getattr(find(row["designation"]), row["basis"])

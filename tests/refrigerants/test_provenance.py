@@ -44,9 +44,7 @@ def test_every_key_of_a_table_exists_and_goes_with_a_value(table):
 def test_bibliography_is_complete():
     """Each source tells what was taken and how it was read; memory has a confidence, others have none."""
     for entry in read_sources().values():
-        assert all((entry.title, entry.edition, entry.publisher, entry.kind, entry.taken, entry.how)), (
-            entry.key
-        )
+        assert all((entry.title, entry.edition, entry.publisher, entry.kind, entry.taken, entry.how)), entry.key
         assert (entry.confidence != "") == (entry.basis == "memory"), entry.key
 
 
@@ -131,9 +129,7 @@ def test_disputes_name_known_refrigerants_and_fields():
 def test_values_lists_every_value_field():
     """values() holds every field that is a value, for tables of provenance."""
     refrigerant = find("R32")
-    expected = [
-        field.name for field in fields(refrigerant) if isinstance(getattr(refrigerant, field.name), Value)
-    ]
+    expected = [field.name for field in fields(refrigerant) if isinstance(getattr(refrigerant, field.name), Value)]
 
     assert list(refrigerant.values()) == expected
 
