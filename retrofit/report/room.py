@@ -6,12 +6,11 @@ from collections.abc import Iterable
 from dataclasses import dataclass, replace
 
 from retrofit.case import Case
+from retrofit.report.asked import Asked, asked_texts, shared_texts
 from retrofit.report.classes import ClassBlock, Step, class_blocks, steps
 from retrofit.report.gathering import basis_text, gathered, nameless, names
-from retrofit.report.judging import spelled
-from retrofit.report.values import three_digits
 from retrofit.study import Comparison, Entry
-from retrofit.study.room import UNKNOWN, Question, RoomCheck, WorkedLimit
+from retrofit.study.room import UNKNOWN, RoomCheck, WorkedLimit
 from retrofit.units import UnitSystem
 
 NOT_GIVEN = "not given"
@@ -66,38 +65,6 @@ class LimitBlock:
 
 
 @dataclass(frozen=True)
-class Number:
-    """The number of a question: for whom, its value, the working, and what is missing."""
-
-    about: str
-    value: str
-    lines: tuple[str, ...]
-    missing: tuple[str, ...]
-
-
-@dataclass(frozen=True)
-class Asked:
-    """One thing to ask, with its numbers.
-
-    Attributes:
-        topic, text: What it is about, and the question.
-        about: Of whom; empty if it is asked of every refrigerant.
-        numbers: By refrigerant.
-        lines, missing: What is so of every number, and what is missing for every refrigerant.
-        source, basis: Where it comes from.
-    """
-
-    topic: str
-    text: str
-    about: str
-    numbers: tuple[Number, ...]
-    lines: tuple[str, ...]
-    missing: tuple[str, ...]
-    source: str
-    basis: str
-
-
-@dataclass(frozen=True)
 class RoomPart:
     """Everything on charge and room.
 
@@ -148,8 +115,8 @@ def room_part(comparison: Comparison, units: UnitSystem) -> RoomPart | None:
         charge_of_text(checks[0][1]) if checks else "",
         room_lines(comparison, units),
         _limit_blocks(checks, units),
-        _asked(((entry, item) for entry, check in checks for item in check.questions), len(checks), units),
-        _asked(((entry, item) for entry, check in checks for item in check.machinery_room), len(checks), units),
+        asked_texts(((entry, item) for entry, check in checks for item in check.questions), len(checks), units),
+        asked_texts(((entry, item) for entry, check in checks for item in check.machinery_room), len(checks), units),
         steps(comparison),
         class_blocks(comparison),
     )
@@ -293,7 +260,7 @@ def _limit_line(entry: Entry, limit: WorkedLimit, units: UnitSystem) -> LimitLin
 
 
 def _block(limit: WorkedLimit, lines: list[tuple[Entry, LimitLine]]) -> LimitBlock:
-    shared = _shared([line.flags for _, line in lines])
+    shared = shared_texts([line.flags for _, line in lines])
     alone = ((entry, _without(line, shared)) for entry, line in lines)
     return LimitBlock(
         f"{limit.code_family}: {limit.title[:1].lower()}{limit.title[1:]}",
@@ -311,59 +278,3 @@ def _block(limit: WorkedLimit, lines: list[tuple[Entry, LimitLine]]) -> LimitBlo
 
 def _without(line: LimitLine, shared: tuple[str, ...]) -> LimitLine:
     return replace(line, flags=tuple(flag for flag in line.flags if flag not in shared))
-
-
-# Questions
-
-
-def _asked(pairs: Iterable[tuple[Entry, Question]], count: int, units: UnitSystem) -> tuple[Asked, ...]:
-    """Return questions, each once, with the numbers of the refrigerants they are asked of."""
-    found: dict[tuple[str, str, str, str], list[tuple[Entry, Number]]] = {}
-    for entry, item in pairs:
-        key = (item.topic, spelled(item.text), item.source, item.basis)
-        found.setdefault(key, []).append((entry, _number(entry, item, units)))
-    return tuple(_question(key, numbers, count) for key, numbers in found.items())
-
-
-def _number(entry: Entry, item: Question, units: UnitSystem) -> Number:
-    value = "" if item.value is None else _value(item.kind, item.value, units)
-    lines = tuple(nameless(entry, line) for line in item.lines)
-    return Number("", value, lines, tuple(nameless(entry, text) for text in item.missing))
-
-
-def _value(kind: str, value: float, units: UnitSystem) -> str:
-    """Return a number with its unit; concentrations in air are the thousandth part of a usual density."""
-    if kind != "density":
-        return units.with_unit(kind, value)
-    label = {"si": "g/m³", "ip": "lb/1000 ft³"}[units.name]
-    return f"{three_digits(1000.0 * float(units.number('density', value)))}\N{NO-BREAK SPACE}{label}"
-
-
-def _question(key: tuple[str, str, str, str], numbers: list[tuple[Entry, Number]], count: int) -> Asked:
-    topic, text, source, basis = key
-    asked = {entry.refrigerant.designation: entry for entry, _ in numbers}
-    about = "" if len(asked) == count else names(asked.values())
-    differ = len({number for _, number in numbers}) > 1
-    lines = _shared([number.lines for _, number in numbers if differ and number.lines])
-    missing = _shared([number.missing for _, number in numbers if differ])
-    groups = gathered((entry, _alone(number, lines, missing)) for entry, number in numbers)
-    shown = tuple(
-        replace(number, about="" if len(groups) == 1 else names(entries))
-        for number, entries in groups.items()
-        if number.value or number.lines or number.missing
-    )
-    return Asked(topic, text, about, shown, lines, missing, source, basis_text(basis))
-
-
-def _shared(every: list[tuple[str, ...]]) -> tuple[str, ...]:
-    """Return the texts that stand in all of several lists."""
-    return tuple(text for text in every[0] if all(text in texts for texts in every)) if every else ()
-
-
-def _alone(number: Number, lines: tuple[str, ...], missing: tuple[str, ...]) -> Number:
-    """Return a number without what is so of every refrigerant."""
-    return replace(
-        number,
-        lines=tuple(text for text in number.lines if text not in lines),
-        missing=tuple(text for text in number.missing if text not in missing),
-    )
