@@ -11,6 +11,7 @@ import os
 import signal
 import sys
 from collections.abc import Callable, Iterator
+from datetime import datetime
 from functools import wraps
 from pathlib import Path
 from typing import TYPE_CHECKING, Any, NoReturn
@@ -116,12 +117,12 @@ def _interrupts_held() -> Iterator[None]:
         raise KeyboardInterrupt
 
 
-def _compared(case_file: Path) -> Comparison:
+def _compared(case_file: Path, on: datetime | None) -> Comparison:
     from retrofit.case import read_case
     from retrofit.checks import assess
     from retrofit.study import compare as compare_case
 
-    return assess(compare_case(read_case(case_file), _say_build))
+    return assess(compare_case(read_case(case_file), _say_build), on.date() if on else None)
 
 
 def _print_json(value: object) -> None:
@@ -130,6 +131,12 @@ def _print_json(value: object) -> None:
 
 units_option = click.option(
     "--units", type=click.Choice(["si", "ip"]), default="si", show_default=True, help="Units of what is shown."
+)
+on_option = click.option(
+    "--on",
+    type=click.DateTime(["%Y-%m-%d"]),
+    metavar="DATE",
+    help="Day to read the tables of law for, as 2027-04-01; today if left out.",
 )
 json_option = click.option("--json", "as_json", is_flag=True, help="One JSON object in SI base units.")
 
@@ -184,12 +191,13 @@ def check(case_file: Path) -> None:
 @units_option
 @json_option
 @click.option("--csv", "as_csv", is_flag=True, help="One line a refrigerant, in SI base units.")
+@on_option
 @_guarded
-def compare(case_file: Path, units: str, as_json: bool, as_csv: bool) -> None:
+def compare(case_file: Path, units: str, as_json: bool, as_csv: bool, on: datetime | None) -> None:
     """Compare the candidates of a CASE with the refrigerant in the plant."""
     if as_json and as_csv:
         raise click.UsageError("--json and --csv exclude each other")
-    comparison = _compared(case_file)
+    comparison = _compared(case_file, on)
     if as_json:
         from retrofit.report.machine import comparison_json
 
@@ -210,14 +218,13 @@ def compare(case_file: Path, units: str, as_json: bool, as_csv: bool) -> None:
 @click.option("-o", "--output", type=CASE, help="File to write; the case's name with .html if left out.")
 @units_option
 @click.option("--templates", type=CASE, help="Folder of your own templates, laid over the built-in ones.")
+@on_option
 @_guarded
-def report(case_file: Path, output: Path | None, units: str, templates: Path | None) -> None:
+def report(case_file: Path, output: Path | None, units: str, templates: Path | None, on: datetime | None) -> None:
     """Write the report of a CASE as one HTML file."""
-    from datetime import datetime
-
     from retrofit.report import render_html, write_report
 
-    comparison = _compared(case_file)
+    comparison = _compared(case_file, on)
     html = render_html(comparison, units=units, template_folder=templates, made_at=datetime.now().astimezone())
     path = output or Path(f"{case_file.stem}.html")
     write_report(path, html)

@@ -1,6 +1,7 @@
 """What every test shares: a store of tables of this session's own, so that each refrigerant is built once,
 and cases without files."""
 
+import datetime
 import os
 
 import pytest
@@ -23,6 +24,14 @@ def session_store(tmp_path_factory):
     os.environ[STORE] = str(folder)
     yield str(folder)
     del os.environ[STORE]
+
+
+@pytest.fixture(scope="session", autouse=True)
+def day_of_the_tests():
+    """Read the tables of law for one fixed day, so that no result of a test changes with the calendar."""
+    with pytest.MonkeyPatch.context() as patch:
+        patch.setattr("retrofit.checks.law.check.today", lambda: datetime.date(2026, 12, 1))
+        yield
 
 
 @pytest.fixture(scope="session")

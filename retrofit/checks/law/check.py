@@ -22,6 +22,11 @@ DEFERENCE = (
 _DAYS_PER_YEAR = 365.25
 
 
+def today() -> datetime.date:
+    """Return the day on which the tables are read if none is named; the one place that asks the clock."""
+    return datetime.date.today()
+
+
 def with_law(comparison: Comparison, on: datetime.date | None = None) -> Comparison:
     """Return a result with what the tables of law say, if the case names a jurisdiction.
 
@@ -33,7 +38,7 @@ def with_law(comparison: Comparison, on: datetime.date | None = None) -> Compari
     law = comparison.case.law
     if law is None or law.jurisdiction is None:
         return comparison
-    day = on or datetime.date.today()
+    day = on or today()
     every = tables_for(comparison.case.path)
     tables = [table for table in every if _holds_for(table, law.jurisdiction)]
     basis = _basis(law, law.jurisdiction, day, tables, every)
