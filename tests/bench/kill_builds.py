@@ -105,8 +105,11 @@ def main() -> int:
         reference, store = Path(folder) / "in-peace", Path(folder) / "killed"
         first, whole = built_in_peace(reference)
         print(f"in peace: {len(NAMES)} refrigerants, first table after {first:.2f} s, done after {whole:.2f} s")
-        faults, killed = [], 0
-        for i in range(options.kills):
+        faults, killed, tries = [], 0, 0
+        while (
+            killed < options.kills and tries < 3 * options.kills
+        ):  # a build that was done before the signal counts not
+            i, tries = tries, tries + 1
             if i % 4 == 3 or (killed > 0 and all(any(store.glob(f"{name}.*.tables")) for name in NAMES)):
                 for path in store.glob("*.tables"):  # begin anew, so that there is something to build
                     path.unlink()
@@ -117,14 +120,14 @@ def main() -> int:
             faults += unreadable(store, reference)
         halves = len(list(store.glob(".half-*"))) if store.is_dir() else 0
         left = sum(any(store.glob(f"{name}.*.tables")) for name in NAMES)
-        print(f"killed {killed} of {options.kills} builds; left {left} tables and {halves} half-written files")
+        print(f"killed {killed} builds in {tries} tries; left {left} tables and {halves} half-written files")
         for path in store.glob("*.tables"):
             path.unlink()
         two = [build(store), build(store)]
         codes = [process.wait() for process in two]
         faults += differing(store, reference)
         print(f"two at once: exit codes {codes}; differing from the build in peace: {', '.join(faults) or 'none'}")
-    return int(bool(faults) or any(codes) or killed == 0)
+    return int(bool(faults) or any(codes) or killed < options.kills)
 
 
 if __name__ == "__main__":
