@@ -21,7 +21,7 @@ def discharge(view: View) -> Iterator[Component]:
     )
     fact = f"The discharge reaches {corner.value - KELVIN:.0f} °C{corner.where}."
     ask = "Highest discharge temperature that the maker allows with this refrigerant and oil; head cooling, injection."
-    matter = Matter("discharge-temperature", "Discharge temperature", fact, measures, (bound,), ask)
+    matter = Matter("discharge-temperature", "Compressor, discharge temperature", fact, measures, (bound,), ask)
     # The reading of the limit itself, so that today's refrigerant, too, is judged.
     yield judged(matter, [bound.level(corner.value - KELVIN)], [new.missing["hottest"]])
 
@@ -35,7 +35,7 @@ def ratio(view: View) -> Iterator[Component]:
     )
     fact = f"The pressure ratio reaches {corner.value:.1f}{corner.where}."
     ask = "The maker's envelope with this refrigerant."
-    matter = Matter("pressure-ratio", "Pressure ratio", fact, measures, (bound,), ask)
+    matter = Matter("pressure-ratio", "Compressor, pressure ratio", fact, measures, (bound,), ask)
     yield judged(matter, [bound.level(corner.value)], [view.numbers.new.missing["hottest"]])
 
 

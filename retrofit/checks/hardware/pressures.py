@@ -169,7 +169,7 @@ def near_critical(view: View) -> Iterator[Component]:
         Measure("Critical temperature", "temperature", old.T_critical_K, new.T_critical_K),
     )
     fact = f"Condensing comes within {distance:.0f} K of the critical temperature."
-    matter = Matter("near-critical", "Condensing near the critical point", fact, measures, (Bound(limit, "below"),))
+    matter = Matter("near-critical", "Condenser, critical point", fact, measures, (Bound(limit, "below"),))
     yield judged(matter, [view.level("near-critical")], [new.missing["hottest"]])
 
 
