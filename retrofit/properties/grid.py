@@ -7,7 +7,7 @@ no more than a node search and a weighted sum, whatever the spacing of the nodes
 
 from __future__ import annotations
 
-from collections.abc import Callable, Sequence
+from collections.abc import Callable
 from dataclasses import dataclass
 
 import numpy as np
@@ -148,25 +148,10 @@ class Surface:
 
     def __call__(self, x: FloatArray, y: FloatArray, *quantities: int) -> list[FloatArray]:
         """Return the asked quantities at the points (x, y), which broadcast together."""
-        return self._weighted(x, y, quantities, hermite_weights)
-
-    def slope_y(self, x: FloatArray, y: FloatArray, quantity: int) -> FloatArray:
-        """Return the first derivative along y of one quantity. [unit of the quantity / unit of y]
-
-        Args:
-            x: Positions along the first axis. [unit of its nodes]
-            y: Positions along the second axis; broadcasts with `x`. [unit of its nodes]
-            quantity: Which quantity. [-]
-        """
-        return self._weighted(x, y, (quantity,), hermite_slope_weights)[0]
-
-    def _weighted(
-        self, x: FloatArray, y: FloatArray, quantities: Sequence[int], y_weights: Weights
-    ) -> list[FloatArray]:
         i, t, width_x = cell(self.x, x)
         j, u, width_y = cell(self.y, y)
         a0, a1, a2, a3 = hermite_weights(t, width_x)
-        b0, b1, b2, b3 = y_weights(u, width_y)
+        b0, b1, b2, b3 = hermite_weights(u, width_y)
         near = i * self.y.size + j
         far = near + self.y.size
 
