@@ -4,24 +4,30 @@ Read one with `read_case`; every complaint arrives at once in a `CaseFileError`.
 """
 
 from retrofit.case.compressor import Compressor, Polynomial
+from retrofit.case.emissions import Emissions, GridYear, TopUp
 from retrofit.case.exchangers import Condenser, Evaporator, Exchanger
 from retrofit.case.keys import meaning, quantity
 from retrofit.case.law import EQUIPMENT, Law
 from retrofit.case.model import Case, Default
+from retrofit.case.money import Items, Money, Option, Options, Range
 from retrofit.case.numbers import EfficiencyPoint, FilmFactors
 from retrofit.case.pipework import GasLine, Lines, LiquidLine, Receiver, Valve
 from retrofit.case.plant import Compare, Duty, Plant
+from retrofit.case.plus_minus import PlusMinus
 from retrofit.case.reader import read_case
 from retrofit.case.readings import Controls, Readings
 from retrofit.case.room import MachineryRoom, Room
 from retrofit.case.schema import SCHEMA_FILE, case_schema
 from retrofit.case.template import new_case_text
 from retrofit.case.thresholds import Threshold, Thresholds
+from retrofit.case.year import Bin, Climate, Year
 
 __all__ = [
     "EQUIPMENT",
     "SCHEMA_FILE",
+    "Bin",
     "Case",
+    "Climate",
     "Compare",
     "Compressor",
     "Condenser",
@@ -29,22 +35,32 @@ __all__ = [
     "Default",
     "Duty",
     "EfficiencyPoint",
+    "Emissions",
     "Evaporator",
     "Exchanger",
     "FilmFactors",
     "GasLine",
+    "GridYear",
+    "Items",
     "Law",
     "Lines",
     "LiquidLine",
     "MachineryRoom",
+    "Money",
+    "Option",
+    "Options",
     "Plant",
+    "PlusMinus",
     "Polynomial",
+    "Range",
     "Readings",
     "Receiver",
     "Room",
     "Threshold",
     "Thresholds",
+    "TopUp",
     "Valve",
+    "Year",
     "case_schema",
     "meaning",
     "new_case_text",

@@ -9,21 +9,28 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
-from typing import Annotated, get_args
+from typing import TYPE_CHECKING, Annotated, get_args
 
 from pydantic import Field
 from pydantic.fields import FieldInfo
 
 from retrofit.case.compressor import Compressor
+from retrofit.case.emissions import Emissions
 from retrofit.case.exchangers import Condenser, Evaporator
 from retrofit.case.law import Law
+from retrofit.case.money import Money, Options
 from retrofit.case.pipework import Lines, Receiver, Valve
 from retrofit.case.plant import Compare, Duty, Plant
+from retrofit.case.plus_minus import PlusMinus
 from retrofit.case.readings import Controls, Readings
 from retrofit.case.room import MachineryRoom, Room
 from retrofit.case.table import Table, key
 from retrofit.case.thresholds import Thresholds
 from retrofit.case.values import Text
+from retrofit.case.year import Year
+
+if TYPE_CHECKING:
+    from retrofit.case.weather import Weather
 
 
 class CaseFile(Table):
@@ -49,6 +56,11 @@ class CaseFile(Table):
     room: Room | None = key("room", "The room that a leak would fill.", None)
     machinery_room: MachineryRoom | None = key("machinery_room", "The machinery room.", None)
     law: Law | None = key("law", "Where the plant stands in law, and for how long.", None)
+    year: Year | None = key("year", "A year of the plant: weather, load and what runs beside the compressors.", None)
+    emissions: Emissions | None = key("emissions", "Leaks, the grid, and what becomes of the charge.", None)
+    money: Money | None = key("money", "Prices, in the user's currency.", None)
+    options: Options | None = key("options", "What each option costs, and how it differs.", None)
+    plus_minus: PlusMinus | None = key("plus_minus", "How far inputs may be off, by their keys.", None)
     thresholds: Thresholds | None = key("thresholds", "The user's own thresholds of the checks.", None)
 
 
@@ -93,7 +105,7 @@ class Case:
 
     `given` maps each key of the file ("duty.cooling") to the text written there; `defaults` are the
     values taken for keys left out; `path` is the file as named by the user and `text` its content.
-    Tables from `readings` on are None when the file has none.
+    Tables from `readings` on are None when the file has none; `weather` is None without a year.
     """
 
     title: str
@@ -117,3 +129,9 @@ class Case:
     room: Room | None = None
     machinery_room: MachineryRoom | None = None
     thresholds: Thresholds | None = None
+    year: Year | None = None
+    emissions: Emissions | None = None
+    money: Money | None = None
+    options: Options | None = None
+    plus_minus: PlusMinus | None = None
+    weather: Weather | None = None

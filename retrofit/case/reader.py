@@ -10,7 +10,7 @@ from __future__ import annotations
 import os
 from collections.abc import Iterator, Mapping
 from pathlib import Path
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 from pydantic import ValidationError
 
@@ -24,6 +24,9 @@ from retrofit.case.table import Table, WhyDefault
 from retrofit.case.written import Written, path_of
 from retrofit.errors import CaseFileError, Problem
 from retrofit.units import listed, shown
+
+if TYPE_CHECKING:
+    from retrofit.case.weather import Weather
 
 LONGEST_GIVEN = 1000  # characters
 LONGEST_PATH = 4096  # characters
@@ -56,6 +59,7 @@ def read_case(path: str | os.PathLike[str]) -> Case:
 def _case(model: CaseFile, data: Mapping[str, Any], name: str, text: str, defaults: tuple[Default, ...]) -> Case:
     tables = {table: getattr(model, table) for table in TABLES if "." not in table}
     return Case(
+        weather=_weather(model),
         title=model.title or Path(name).stem,
         about=model.about,
         path=name,
@@ -64,6 +68,17 @@ def _case(model: CaseFile, data: Mapping[str, Any], name: str, text: str, defaul
         defaults=defaults,
         **tables,
     )
+
+
+def _weather(model: CaseFile) -> Weather | None:
+    """Return the weather of the case's year; a file beside the case is still to be read."""
+    from retrofit.case.weather import weather_of_bins, weather_of_climate
+
+    if model.year is None:
+        return None
+    if model.year.climate is not None:
+        return weather_of_climate(model.year.climate)
+    return weather_of_bins(model.year.bins) if model.year.bins else None
 
 
 # What was written, and what was assumed

@@ -182,6 +182,25 @@ KINDS: Mapping[str, Kind] = {
     "hours per day": Kind(
         "a number of hours per day", "h", "16 h", {"": Unit(1.0), "h": Unit(1.0)}, "a bare number (16) or with h"
     ),
+    "energy": Kind(
+        "an energy",
+        "kWh",
+        "300000 kWh",
+        {"kWh": Unit(3.6e6), "MWh": Unit(3.6e9), "GJ": Unit(1e9), "MJ": Unit(1e6)},
+        "kWh, MWh, MJ or GJ",
+    ),
+    "grid factor": Kind(
+        "a grid factor",
+        "kg/kWh",
+        "0.35 kg/kWh",
+        {
+            "kg/kWh": Unit(1.0 / 3.6e6),
+            "g/kWh": Unit(1e-3 / 3.6e6),
+            "lb/kWh": Unit(POUND_KG / 3.6e6),
+            "t/MWh": Unit(1.0 / 3.6e6),
+        },
+        "kg/kWh, g/kWh, t/MWh or lb/kWh",
+    ),
     "years": Kind(
         "a number of years", "years", "8 years", {"": Unit(1.0), "years": Unit(1.0), "year": Unit(1.0)}, "years"
     ),
