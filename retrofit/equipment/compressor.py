@@ -24,7 +24,6 @@ ROUNDING = 1e-9  # allowed at the ends of a range, relative
 RATIOS, SUCTIONS = 15, 9  # samples of a map from which its curve is made
 KINDS = ("fixed", "steps", "variable")
 MEASURED_AT = ("shaft", "electric")
-FLOW_FACTOR = 0.75
 
 
 @dataclass(frozen=True, eq=False)
@@ -293,19 +292,6 @@ def shaft_and_electric(
 def _refuse(what: str, values: FloatArray, is_bad: BoolArray, allowed: str) -> None:
     if np.any(is_bad):
         raise QuantityError(f"{what} {float(values[is_bad].flat[0]):g} is not {allowed}")
-
-
-def flow_at_other_superheat(density_over_rated: ArrayLike, factor: float = FLOW_FACTOR) -> FloatArray:
-    """Return mass flow over rated mass flow when the suction gas is warmer or colder than in the rating. [-]
-
-    Args:
-        density_over_rated: Suction density over that of the rating, at the same suction pressure. [-]
-        factor: Share of the change of density that the mass flow follows: 1 if the volumetric efficiency stays, 0 if
-            the gas reaches the cylinder equally warm whatever its temperature at the inlet. [-]
-    Returns: m/m_r = 1 + F (rho/rho_r - 1); over the density ratio, it is the change of volumetric efficiency. [-]
-    Source: AHRI 540, informative; the form and F = 0.75 from memory.
-    """
-    return np.asarray(1.0 + factor * (np.asarray(density_over_rated, dtype=float) - 1.0))
 
 
 # -- part load ---------------------------------------------------------------------------------------

@@ -14,7 +14,6 @@ from retrofit.equipment.compressor import (
     ROUNDED_SHARE,
     EfficiencyCurve,
     EfficiencyMap,
-    flow_at_other_superheat,
     operation,
     shaft_and_electric,
 )
@@ -275,13 +274,6 @@ def test_an_unknown_place_of_measurement_is_named():
     """Power measured anywhere else than at the shaft or the mains is refused."""
     with pytest.raises(QuantityError, match="'mains' is neither of shaft, electric"):
         shaft_and_electric(1e3, 0.9, "mains")
-
-
-def test_flow_at_other_superheat():
-    """From memory of AHRI 540: 10 % thinner gas carries 7.5 % less mass (1 + 0.75 (0.9 - 1) = 0.925)."""
-    assert flow_at_other_superheat([1.0, 0.9]) == pytest.approx([1.0, 0.925])
-    assert flow_at_other_superheat(0.9, factor=1.0) == pytest.approx(0.9)
-    assert flow_at_other_superheat(0.9, factor=0.0) == pytest.approx(1.0)
 
 
 # -- part load ---------------------------------------------------------------------------------------
