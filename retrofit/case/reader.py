@@ -72,10 +72,10 @@ def _case(model: CaseFile, data: Mapping[str, Any], name: str, text: str, defaul
 
 def _weather(model: CaseFile) -> Weather | None:
     """Return the weather of the case's year; a file beside the case is still to be read."""
-    from retrofit.case.weather import weather_of_bins, weather_of_climate
-
     if model.year is None:
         return None
+    from retrofit.case.weather import weather_of_bins, weather_of_climate  # needs numpy, which takes a while to load
+
     if model.year.climate is not None:
         return weather_of_climate(model.year.climate)
     return weather_of_bins(model.year.bins) if model.year.bins else None
