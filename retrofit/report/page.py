@@ -21,7 +21,8 @@ from retrofit.report.judging import Judged, Shared, judged, spelled, threshold_s
 from retrofit.report.law import LawPart, law_part
 from retrofit.report.plant import WHY_SAME_COOLING, has_plant
 from retrofit.report.provenance import Traced, traced_values
-from retrofit.report.room import RoomPart, has_room, room_part
+from retrofit.report.room import RoomPart, room_part
+from retrofit.report.sections import Place, annex, main_part
 from retrofit.report.states import Portrait, enthalpy_note, portraits
 from retrofit.report.table import Table
 from retrofit.report.values import UsedSource, environment_table, used_sources
@@ -29,24 +30,6 @@ from retrofit.study import Comparison, Entry
 from retrofit.units import MISSING, UnitSystem
 
 SYSTEM_WORDS = {"si": "metric units", "ip": "inch-pound units"}
-# Sections in their order, by id; those on readings, room and law only where the case has such data.
-SECTIONS = {
-    "answer": "Answer",
-    "cautions": "Cautions",
-    "found": "As found",
-    "comparison": "Comparison",
-    "charts": "Charts",
-    "hardware": "Hardware",
-    "room": "Charge and room",
-    "law": "Law",
-    "findings": "Findings",
-    "states": "State points",
-    "assumptions": "Assumptions",
-    "model": "Model",
-    "limits": "Limits",
-    "terms": "Terms",
-    "sources": "Sources",
-}
 
 
 @dataclass(frozen=True)
@@ -84,8 +67,10 @@ class Page:
     made_at: str
     case_file: str
     versions: tuple[tuple[str, str], ...]
-    contents: tuple[tuple[str, str], ...]
-    number: Mapping[str, int]
+    main: tuple[Place, ...]
+    annex: tuple[Place, ...]
+    number: Mapping[str, str]
+    where: Mapping[str, str]
     answer: Answered
     convention: str
     band: str
@@ -130,7 +115,7 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
     case = comparison.case
     (existing, *candidates), shared = judged(comparison)
     solved = any(entry.duty is not None for entry in comparison.entries)
-    contents = _contents(comparison)
+    main, detail = main_part(comparison), annex(comparison)
     return Page(
         policy=POLICY,
         title=plain(case.title),
@@ -141,8 +126,10 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
         made_at=_time(made_at),
         case_file=plain(PurePath(case.path).name),
         versions=tuple(comparison.versions.items()),
-        contents=contents,
-        number={name: place for place, (name, _) in enumerate(contents, start=1)},
+        main=main,
+        annex=detail,
+        number={place.name: place.number for place in (*main, *detail)},
+        where={place.name: place.words for place in (*main, *detail)},
         answer=_answer(comparison, units),
         convention=convention(comparison),
         band=band_text(units),
@@ -175,16 +162,6 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
         check_sources=threshold_sources(comparison),
         not_checked=not_checked(comparison),
     )
-
-
-def _contents(comparison: Comparison) -> tuple[tuple[str, str], ...]:
-    """Return the sections that this result has, in their order."""
-    is_there = {
-        "found": comparison.baseline is not None,
-        "room": has_room(comparison),
-        "law": comparison.law is not None,
-    }
-    return tuple(item for item in SECTIONS.items() if is_there.get(item[0], True))
 
 
 def plain(text: str) -> str:

@@ -42,7 +42,7 @@ def plain(text):
 
 def section(html):
     """Return the section on law as HTML."""
-    return re.search(r'<section id="law".*?</section>', html, re.DOTALL)[0]
+    return "".join(re.findall(r'<section id="law(?:-rows)?".*?</section>', html, re.DOTALL))
 
 
 def numbers(cell):

@@ -1,0 +1,99 @@
+"""The order of the report: which sections it has, in the main part and in the annex, and how they are counted."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+
+from retrofit.report.room import has_room
+from retrofit.study import Comparison
+
+
+def _always(comparison: Comparison) -> bool:
+    return True
+
+
+@dataclass(frozen=True)
+class Section:
+    """A section of the report.
+
+    Attributes:
+        name: Its id, and the name of its template.
+        title: Its title in the list of contents.
+        is_there: Whether a result has what it shows.
+    """
+
+    name: str
+    title: str
+    is_there: Callable[[Comparison], bool] = _always
+
+
+@dataclass(frozen=True)
+class Place:
+    """A section where it stands: id, title, and its number as it is printed and as text refers to it."""
+
+    name: str
+    title: str
+    number: str
+    words: str
+
+
+def _has_law(comparison: Comparison) -> bool:
+    return comparison.law is not None
+
+
+def _has_readings(comparison: Comparison) -> bool:
+    return comparison.baseline is not None
+
+
+# A line here and a template of its name make a section. The first one is page one, and stands alone.
+MAIN = (
+    Section("answer", "Summary"),
+    Section("options", "Options"),
+    Section("cautions", "Cautions"),
+    Section("found", "As found", _has_readings),
+    Section("law", "Why change", _has_law),
+    Section("comparison", "Comparison"),
+    Section("charts", "Charts"),
+    Section("hardware", "Hardware"),
+    Section("room", "Charge and room", has_room),
+    Section("assumptions", "Assumptions"),
+    Section("limits", "Limits"),
+)
+ANNEX = (
+    Section("findings", "Findings"),
+    Section("components", "Components"),
+    Section("room-working", "Room: working", has_room),
+    Section("law-rows", "Law: row by row", _has_law),
+    Section("states", "State points"),
+    Section("inputs", "Inputs"),
+    Section("model", "Model"),
+    Section("terms", "Terms"),
+    Section("sources", "Sources"),
+)
+
+
+def main_part(comparison: Comparison) -> tuple[Place, ...]:
+    """Return the sections of the main part that a result has, counted 1, 2, 3.
+
+    Args:
+        comparison: The result.
+    """
+    there = [section for section in MAIN if section.is_there(comparison)]
+    return tuple(
+        Place(section.name, section.title, str(count), f"section {count}")
+        for count, section in enumerate(there, start=1)
+    )
+
+
+def annex(comparison: Comparison) -> tuple[Place, ...]:
+    """Return the sections of the annex that a result has, lettered A, B, C.
+
+    Args:
+        comparison: The result.
+    """
+    there = [section for section in ANNEX if section.is_there(comparison)]
+    return tuple(
+        Place(section.name, section.title, chr(ord("A") + count), f"annex {chr(ord('A') + count)}")
+        for count, section in enumerate(there)
+    )
