@@ -4,7 +4,7 @@
 convention. Everything broadcasts, so one point, a year and a thousand draws go the same way.
 """
 
-from retrofit.cycle.matching import Temperatures, cycle_temperatures, matched_pressures
+from retrofit.cycle.matching import Temperatures, cycle_temperatures, matched_pressures, pressure_at_mean
 from retrofit.cycle.single_stage import Cycle, Settings, solve_cycle
 from retrofit.cycle.states import StatePoint, state_points
 
@@ -15,6 +15,7 @@ __all__ = [
     "Temperatures",
     "cycle_temperatures",
     "matched_pressures",
+    "pressure_at_mean",
     "solve_cycle",
     "state_points",
 ]

@@ -72,7 +72,7 @@ def matched_pressures(
     _check_reach(fluid, temperatures)
     if temperatures.convention == "dew":
         return fluid.p_dew(temperatures.T_evap_K), fluid.p_dew(temperatures.T_cond_K)
-    p_cond = _condensing_pressure_at_mean(fluid, np.asarray(temperatures.T_cond_K, dtype=float))
+    p_cond = pressure_at_mean(fluid, temperatures.T_cond_K)
     h_inlet = fluid.liquid(p_cond, subcooling_K).h_J_per_kg
     p_evap = _evaporating_pressure_at_mean(fluid, np.asarray(temperatures.T_evap_K, dtype=float), h_inlet)
     return p_evap, p_cond
@@ -103,8 +103,15 @@ def _check_reach(fluid: Fluid, temperatures: Temperatures) -> None:
         )
 
 
-def _condensing_pressure_at_mean(fluid: Fluid, T_mean: FloatArray) -> FloatArray:
-    inside = fluid.as_lenient()
+def pressure_at_mean(fluid: Fluid, T_mean_K: ArrayLike) -> FloatArray:
+    """Return the pressure at which dew and bubble point have a temperature as their mean. [Pa]
+
+    Args:
+        fluid: Refrigerant; a lenient one gives NaN where there is no such pressure.
+        T_mean_K: Mean of dew and bubble point. [K]
+    Raises: NoSolutionError if there is no such pressure within the range of the model.
+    """
+    T_mean, inside = np.asarray(T_mean_K, dtype=float), fluid.as_lenient()
 
     def mean(p: FloatArray) -> FloatArray:
         return 0.5 * (inside.dew(p).T_K + inside.bubble(p).T_K)

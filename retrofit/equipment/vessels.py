@@ -14,7 +14,6 @@ FloatArray = NDArray[np.float64]
 BoolArray = NDArray[np.bool_]
 
 CHARGE_MARGIN = 0.10  # common practice: a first charge by density is right within about a tenth
-CYLINDER_LIMIT = 0.80  # share of a recovery cylinder that liquid may fill, common rule of the trade
 
 
 @dataclass(frozen=True)
@@ -99,7 +98,7 @@ def _liquid_density(fluid: Fluid, T_K: ArrayLike) -> FloatArray:
 
 
 def cylinders_needed(
-    fluid: Fluid, T_K: ArrayLike, charge_kg: ArrayLike, cylinder_m3: ArrayLike, limit: ArrayLike = CYLINDER_LIMIT
+    fluid: Fluid, T_K: ArrayLike, charge_kg: ArrayLike, cylinder_m3: ArrayLike, limit: ArrayLike
 ) -> FloatArray:
     """Return how many recovery cylinders a charge needs.
 

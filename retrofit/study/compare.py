@@ -126,6 +126,17 @@ def _today(case: Case, existing: Fluid) -> _Today:
     return _Today(case, settings, model, targets, swept, plant, reason)
 
 
+def site_of(case: Case, existing: Fluid) -> Site:
+    """Return what a result was reckoned with, to ask the same plant about further conditions.
+
+    Args:
+        case: The case of a `Comparison`, its readings applied.
+        existing: The refrigerant in the plant.
+    Raises: RetrofitError as `compare` has it for the existing refrigerant.
+    """
+    return _today(case, existing).site
+
+
 def _cycle(behaviour: Fluid, temperatures: Temperatures, settings: Settings, model: EfficiencyModel) -> Cycle:
     """Solve the cycle of a refrigerant at temperatures, with the compressor's efficiencies at its own pressures."""
     p_evap, p_cond = matched_pressures(behaviour, temperatures, settings.subcooling_K)

@@ -108,7 +108,7 @@ def test_cylinders_by_hand():
     """What fills two cylinders exactly needs two, a gram more a third, and nothing none."""
     f = fluid("R134a")
     one = float(0.8 * 0.06 * _liquid_density("R134a", 50.0))
-    found = cylinders_needed(f, 50.0 + KELVIN, [2.0 * one, 2.0 * one + 1e-3, 0.5 * one, 0.0], 0.06)
+    found = cylinders_needed(f, 50.0 + KELVIN, [2.0 * one, 2.0 * one + 1e-3, 0.5 * one, 0.0], 0.06, 0.8)
 
     np.testing.assert_array_equal(found, [2.0, 3.0, 1.0, 0.0])
 
@@ -117,7 +117,7 @@ def test_cylinders_by_hand():
 def test_cylinders_hold_the_charge(charge, volume):
     """The cylinders counted hold the charge, and one fewer does not."""
     f = fluid("R404A")
-    count = cylinders_needed(f, 323.15, charge, volume)
+    count = cylinders_needed(f, 323.15, charge, volume, 0.8)
     one = vessel_fill(f, 323.15, volume, charge, limit=0.8).largest_charge_kg
 
     assert count * one >= charge * (1.0 - 1e-8)

@@ -1,0 +1,76 @@
+"""Which candidates get a job card and a commissioning sheet, and their numbers with the bands of the model."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+from retrofit.checks.thresholds import model_band, thresholds_for
+from retrofit.study import Comparison, Entry
+from retrofit.study.changeover import Bands, Changeover, changeover
+
+MOST_CARDS = 3  # so that the report of a case with many candidates does not grow without bound
+BEST_FIRST = ("suits", "suits with work", "cannot be said", "does not suit", "")
+
+
+@dataclass(frozen=True)
+class Chosen:
+    """The candidates that get a job card, and the others.
+
+    Attributes:
+        entries: Those that get one.
+        why: By which rule they were chosen.
+        left_out: The others, with the reason for each.
+    """
+
+    entries: tuple[Entry, ...]
+    why: str
+    left_out: tuple[tuple[Entry, str], ...]
+
+
+def chosen_for_cards(comparison: Comparison) -> Chosen:
+    """Return the candidates to write a job card for: the one recommended, or those that no stop stands against.
+
+    Args:
+        comparison: An assessed result.
+    """
+    named = getattr(getattr(comparison.case, "report", None), "recommended", None)
+    if named:
+        found = [entry for entry in comparison.candidates if entry.refrigerant.designation == named]
+        why = f"The case recommends {named}" + ("." if found else ", which is no conversion to one of its candidates.")
+        return _chosen(comparison, found, why, "the case recommends another")
+    free = [entry for entry in comparison.candidates if not _against(entry)]
+    found = sorted(free, key=lambda entry: BEST_FIRST.index(entry.verdict))[:MOST_CARDS]
+    why = (
+        f"The case recommends none, so there is one for each candidate that no stop stands against, {MOST_CARDS} at "
+        "most: by verdict, then in the order of the case."
+    )
+    return _chosen(comparison, found, why, f"beyond the {MOST_CARDS} shown")
+
+
+def _chosen(comparison: Comparison, found: Sequence[Entry], why: str, otherwise: str) -> Chosen:
+    rest = (entry for entry in comparison.candidates if entry not in found)
+    return Chosen(tuple(found), why, tuple((entry, _against(entry) or otherwise) for entry in rest))
+
+
+def _against(entry: Entry) -> str:
+    """Return what stands against writing a job card for a candidate, nothing if nothing does."""
+    stops = [finding.title for finding in entry.findings if finding.level == "stop"]
+    if stops:
+        return f"stopped by: {'; '.join(stops)}"
+    return "" if entry.status == "ok" else f"not computed: {entry.reason}"
+
+
+def changeover_of(comparison: Comparison, entry: Entry, T_inlet_today_K: float | None = None) -> Changeover:
+    """Return the numbers of changing the plant to a candidate.
+
+    Args:
+        comparison: An assessed result.
+        entry: The candidate.
+        T_inlet_today_K: Temperature at the inlet of the condenser on the day, None to leave it out. [K]
+    """
+    band, oil = model_band(), thresholds_for(comparison.case)["residual_oil"]
+    # There is no band of power itself: capacity over COP, taken at its widest.
+    power = band["capacity"].value + band["cop"].value
+    bands = Bands(band["pressure"].value, power, band["T_discharge"].value)
+    return changeover(comparison, entry, bands, sorted(oil.figures.values()), T_inlet_today_K)

@@ -1,0 +1,402 @@
+"""Numbers for those who carry a changeover out: what to recover, drain and charge, and what the gauges should show."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Mapping, Sequence
+from dataclasses import dataclass, replace
+
+import numpy as np
+
+from retrofit.case import Case
+from retrofit.cycle import pressure_at_mean
+from retrofit.equipment.oil import changes_needed
+from retrofit.equipment.vessels import co2_equivalent_t, cylinders_needed, vessel_fill
+from retrofit.errors import NoSolutionError, OutsideValidRangeError, RetrofitError
+from retrofit.properties import Fluid, fluid
+from retrofit.study.compare import site_of
+from retrofit.study.hardware.numbers import HardwareNumbers
+from retrofit.study.installed import ExistingPlant, run_at_condenser_inlet
+from retrofit.study.practice import practice
+from retrofit.study.result import Comparison, Entry, Performance
+from retrofit.study.saturation import saturation_table
+
+KELVIN = 273.15
+LITRE_M3 = 1e-3
+HIGHEST_RISE_K = 40.0  # above the design point: how warm the condenser is tried to lift a plant to its head pressure
+CLOSE_K = 0.01
+SAME_DAY_K = 0.05
+WITHOUT_LAW = ("gwp_100yr_ar4", "gwp_100yr_ar6")
+
+
+@dataclass(frozen=True)
+class Cylinders:
+    """Recovery cylinders of one size: volume inside, what one takes, and how many the charge needs."""
+
+    volume_m3: float
+    each_kg: float
+    count: int
+
+
+@dataclass(frozen=True)
+class Recovery:
+    """What is to be recovered of the refrigerant in the plant.
+
+    Attributes:
+        charge_kg: Charge of today; None if not known.
+        T_K, fill: Temperature and share of the volume that the cylinders are counted with.
+        kg_per_m3: What a cubic metre of cylinder takes; None where `reason` says why.
+        cylinders: Numbers of cylinders by size; none without a charge.
+        reason: What is missing.
+    """
+
+    charge_kg: float | None
+    T_K: float
+    fill: float
+    kg_per_m3: float | None
+    cylinders: tuple[Cylinders, ...]
+    reason: str = ""
+
+
+@dataclass(frozen=True)
+class OilChanges:
+    """Changes of oil that bring the old oil down to a share of all oil.
+
+    Attributes:
+        target: That share.
+        fewest, most: Changes with the least and the most oil left by each; equal if the case gives it.
+    """
+
+    target: float
+    fewest: float
+    most: float
+
+
+@dataclass(frozen=True)
+class Weight:
+    """The climate weight that a label states.
+
+    Attributes:
+        basis: Which GWP, a key of `GWP_BASES`.
+        gwp: The potential; None if there is none on this basis.
+        co2e_t: Weight of the charge expected; None without a charge.
+    """
+
+    basis: str
+    gwp: float | None
+    co2e_t: float | None
+
+
+@dataclass(frozen=True)
+class Bands:
+    """How far what is expected may be from what a plant does.
+
+    Attributes:
+        pressure, power: Relative.
+        T_discharge_K: Temperature difference.
+    """
+
+    pressure: float
+    power: float
+    T_discharge_K: float
+
+
+@dataclass(frozen=True)
+class Window:
+    """What a reading is expected to lie between."""
+
+    low: float
+    high: float
+
+
+@dataclass(frozen=True)
+class Expected:
+    """What the gauges should show at one temperature at the inlet of the condenser, the machine running at full.
+
+    Attributes:
+        name: "milder", "design", "hottest" (the hottest day of the case), "hotter" (one taken) or "today".
+        T_inlet_K: Temperature of air, water or brine there.
+        p_evap_Pa, p_cond_Pa: Pressures, absolute.
+        T_discharge_K, power_W, current_A: At the compressor; a current None if it cannot be told.
+        is_held: Whether the control of head pressure holds the condensing pressure up.
+        reason: Why nothing is known; empty otherwise.
+    """
+
+    name: str
+    T_inlet_K: float
+    p_evap_Pa: Window | None = None
+    p_cond_Pa: Window | None = None
+    T_discharge_K: Window | None = None
+    power_W: Window | None = None
+    current_A: Window | None = None
+    is_held: bool = False
+    reason: str = ""
+
+
+@dataclass(frozen=True)
+class Changeover:
+    """The numbers of one changeover.
+
+    Attributes:
+        entry: The new refrigerant.
+        recovery: What is to be recovered.
+        oil_left: Share of the oil that each change leaves behind, at least and at most, and whether the case says so.
+        is_oil_left_given: Whether that is the case's own.
+        oil_changes: Changes needed for each share of old oil aimed at, the mildest last.
+        first_charge_kg: Least and most to charge first; None if the charge is not known.
+        weights: GWP and climate weight, on the bases of the law that the case names, else on `WITHOUT_LAW`.
+        expected: What the gauges should show; empty where `expected_reason` says why.
+        expected_reason: Why it is not computed.
+    """
+
+    entry: Entry
+    recovery: Recovery
+    oil_left: tuple[float, float]
+    is_oil_left_given: bool
+    oil_changes: tuple[OilChanges, ...]
+    first_charge_kg: tuple[float, float] | None
+    weights: tuple[Weight, ...]
+    expected: tuple[Expected, ...]
+    expected_reason: str = ""
+
+
+def changeover(
+    comparison: Comparison,
+    entry: Entry,
+    bands: Bands,
+    oil_targets: Sequence[float],
+    T_inlet_today_K: float | None = None,
+) -> Changeover:
+    """Return the numbers of changing the plant to a refrigerant.
+
+    Args:
+        comparison: A result.
+        entry: The new refrigerant.
+        bands: Bands of the model.
+        oil_targets: Shares of old oil in all oil to aim at. [-]
+        T_inlet_today_K: Temperature at the inlet of the condenser on the day, to add what is expected there. [K]
+    """
+    given = comparison.case.plant.oil_left
+    left = practice("oil_left").ends if given is None else (given, given)
+    expected, reason = _expected(comparison, entry, bands, T_inlet_today_K)
+    return Changeover(
+        entry=entry,
+        recovery=recovery(comparison.case),
+        oil_left=left,
+        is_oil_left_given=given is not None,
+        oil_changes=tuple(OilChanges(target, *_changes(left, target)) for target in oil_targets),
+        first_charge_kg=_first_charge(entry.hardware_numbers),
+        weights=_weights(entry),
+        expected=expected,
+        expected_reason=reason,
+    )
+
+
+def _changes(left: tuple[float, float], target: float) -> tuple[float, float]:
+    fewest, most = changes_needed(left, target)
+    return float(fewest), float(most)
+
+
+def recovery(case: Case) -> Recovery:
+    """Return what is to be recovered from the plant of a case, and into how many cylinders.
+
+    Args:
+        case: The case.
+    """
+    charge, fill = case.plant.charge_kg, practice("cylinder_fill").low
+    T_K = practice("cylinder_temperature").low + KELVIN
+    try:
+        behaviour = fluid(case.plant.refrigerant)
+    except RetrofitError as error:
+        return Recovery(charge, T_K, fill, None, (), error.message)
+    full = vessel_fill(behaviour, T_K, 1.0, charge or 0.0, fill)
+    if not full.is_liquid:
+        gone = f"the model of {behaviour.designation} has no liquid at {T_K - KELVIN:.0f} °C; go by the mass stamped"
+        return Recovery(charge, T_K, fill, None, (), gone)
+    per_volume = float(full.largest_charge_kg)
+    if charge is None:
+        return Recovery(None, T_K, fill, per_volume, (), "`charge` in [plant] is not given")
+    sizes = [volume * LITRE_M3 for volume in practice("cylinder_volume").ends]
+    counts = cylinders_needed(behaviour, T_K, charge, sizes, fill)
+    found = (Cylinders(size, size * per_volume, int(count)) for size, count in zip(sizes, counts, strict=True))
+    return Recovery(charge, T_K, fill, per_volume, tuple(found))
+
+
+def _first_charge(numbers: HardwareNumbers | None) -> tuple[float, float] | None:
+    if numbers is None or numbers.filling is None:
+        return None
+    low, high = practice("first_charge").ends
+    return low * numbers.filling.expected_kg, high * numbers.filling.expected_kg
+
+
+def _weights(entry: Entry) -> tuple[Weight, ...]:
+    bases = tuple(entry.law.gwp) if entry.law else ()
+    filling = entry.hardware_numbers.filling if entry.hardware_numbers else None
+    return tuple(_weight(entry, basis, filling.expected_kg if filling else None) for basis in bases or WITHOUT_LAW)
+
+
+def _weight(entry: Entry, basis: str, charge_kg: float | None) -> Weight:
+    gwp = getattr(entry.refrigerant, basis).number
+    known = gwp is not None and charge_kg is not None
+    return Weight(basis, gwp, float(co2_equivalent_t(charge_kg, gwp)) if known else None)
+
+
+# -- what the gauges should show ---------------------------------------------------------------------
+
+
+def _expected(
+    comparison: Comparison, entry: Entry, bands: Bands, T_today_K: float | None
+) -> tuple[tuple[Expected, ...], str]:
+    """Return what is expected at each condenser inlet, or why nothing is."""
+    numbers, case = entry.hardware_numbers, comparison.case
+    if numbers is None:
+        return (), entry.reason or "it is not computed"
+    if numbers.basis != "plant":
+        return (), entry.plant_reason or comparison.existing.plant_reason or "the plant as installed is not computed"
+    try:
+        site = site_of(case, fluid(case.plant.refrigerant))
+        behaviour = fluid(entry.refrigerant.designation)
+    except RetrofitError as error:
+        return (), error.message
+    assert site.plant is not None, "the basis says that the plant balances"
+    asked = _Asked(site.plant, behaviour, numbers, bands)
+    return tuple(_at(asked, name, T_K) for name, T_K in _inlets(case, T_today_K)), ""
+
+
+@dataclass(frozen=True)
+class _Asked:
+    """A plant with a refrigerant, ready to be asked about one condition after another."""
+
+    plant: ExistingPlant
+    behaviour: Fluid
+    numbers: HardwareNumbers
+    bands: Bands
+
+    def at(self, T_K: float) -> Performance[float]:
+        return run_at_condenser_inlet(self.plant, self.behaviour, T_K)
+
+    @property
+    def head_pressure_Pa(self) -> float:
+        """Return the pressure that the control of head pressure holds with the new refrigerant, 0 without one."""
+        held = next((item for item in self.numbers.settings if item.key == "head_pressure"), None)
+        if held is None:
+            return 0.0
+        if held.p_Pa.new is None:
+            raise NoSolutionError(f"what the control of head pressure holds is not known: {held.reason}")
+        return held.p_Pa.new
+
+
+def _inlets(case: Case, T_today_K: float | None) -> list[tuple[str, float]]:
+    """Return name and temperature of each condenser inlet, the mildest first."""
+    assert case.condenser is not None
+    assert case.condenser.inlet_K is not None
+    design, hottest = case.condenser.inlet_K, case.plant.highest_ambient_K
+    is_air = case.condenser.medium == "air"
+    milder = design - practice("milder_air" if is_air else "milder_liquid").low
+    found = [("milder", milder), ("design", design)]
+    if is_air and hottest is not None and hottest > design + SAME_DAY_K:
+        found.append(("hottest", hottest))
+    else:
+        found.append(("hotter", design + practice("hotter").low))
+    return found + ([("today", T_today_K)] if T_today_K is not None else [])
+
+
+def _at(asked: _Asked, name: str, T_K: float) -> Expected:
+    try:
+        found, held = asked.at(T_K), asked.head_pressure_Pa
+        if found.p_cond_Pa >= held:
+            return _windows(asked, name, T_K, found)
+        warmer = asked.at(_inlet_at_pressure(asked, T_K, held))
+    except (NoSolutionError, OutsideValidRangeError) as error:
+        return Expected(name, T_K, reason=error.message)
+    return replace(_windows(asked, name, T_K, warmer), is_held=True)
+
+
+def _inlet_at_pressure(asked: _Asked, T_K: float, p_Pa: float) -> float:
+    """Return the inlet temperature at which the plant condenses at a pressure by itself. [K]
+
+    A control that throttles the condenser leaves the compressor the same pressures as a warmer day would.
+    """
+    from scipy.optimize import brentq
+
+    def short(inlet_K: float) -> float:
+        return asked.at(inlet_K).p_cond_Pa / p_Pa - 1.0
+
+    top = T_K + HIGHEST_RISE_K
+    if short(top) < 0.0:
+        raise NoSolutionError("the control of head pressure holds more than the plant reaches: check `head_pressure`")
+    return float(brentq(short, T_K, top, xtol=CLOSE_K))
+
+
+def _windows(asked: _Asked, name: str, T_K: float, found: Performance[float]) -> Expected:
+    """Return what is expected, each number widened by its band."""
+    bands, design, at_design = asked.bands, asked.numbers.new.design, asked.numbers.current_A.new
+    # Motor current goes with power, as everywhere in the hardware.
+    current = None if at_design is None else at_design * found.power_W / design.power_W
+    return Expected(
+        name,
+        T_K,
+        p_evap_Pa=_relative(found.p_evap_Pa, bands.pressure),
+        p_cond_Pa=_relative(found.p_cond_Pa, bands.pressure),
+        T_discharge_K=Window(found.T_discharge_K - bands.T_discharge_K, found.T_discharge_K + bands.T_discharge_K),
+        power_W=_relative(found.power_W, bands.power),
+        current_A=None if current is None else _relative(current, bands.power),
+    )
+
+
+def _relative(value: float, band: float) -> Window:
+    return Window(value * (1.0 - band), value * (1.0 + band))
+
+
+# -- the pressure-temperature table ------------------------------------------------------------------
+
+
+@dataclass(frozen=True)
+class PressureRow:
+    """Pressures of a refrigerant at one temperature, absolute; None outside the range of its model.
+
+    Attributes:
+        T_K: The temperature.
+        p_bubble_Pa, p_dew_Pa: Where it is the bubble point, and where it is the dew point.
+        p_mean_Pa: Where bubble and dew point lie equally far below and above it.
+    """
+
+    T_K: float
+    p_bubble_Pa: float | None
+    p_dew_Pa: float | None
+    p_mean_Pa: float | None
+
+
+def pressure_rows(
+    name: str, temperatures: Sequence[float], on_build: Callable[[str], None] | None = None
+) -> tuple[PressureRow, ...]:
+    """Return the pressures of a refrigerant over temperature, as a technician reads them.
+
+    Args:
+        name: Refrigerant.
+        temperatures: Temperatures. [K]
+        on_build: Called with the designation before tables are built.
+    Raises: UnknownRefrigerantError, NoModelError, ModelFaultError.
+    """
+    rows = saturation_table(name, temperatures, on_build).rows
+    means = pressure_at_mean(fluid(name).as_lenient(), temperatures)
+    return tuple(
+        PressureRow(row.T_K, row.p_bubble_Pa, row.p_dew_Pa, float(p) if np.isfinite(p) else None)
+        for row, p in zip(rows, means, strict=True)
+    )
+
+
+def operating_span(comparison: Comparison, changing: Changeover) -> tuple[float, float] | None:
+    """Return the lowest and highest temperature that a technician meets with a refrigerant, None without a cycle. [K]
+
+    Args:
+        comparison: A result.
+        changing: The changeover.
+    """
+    numbers = changing.entry.hardware_numbers
+    if numbers is None:
+        return None
+    known: Mapping[str, Performance[float]] = numbers.new.conditions
+    low = [min(found.T_evap_inlet_K, found.T_evap_mean_K) for found in known.values()]
+    high = [max(found.T_cond_dew_K, found.T_cond_mean_K) for found in known.values()]
+    ambient = comparison.case.plant.highest_ambient_K
+    return min(low), max([*high, *([ambient] if ambient is not None else [])])
