@@ -8,9 +8,11 @@ from retrofit.case.emissions import Emissions, GridYear, TopUp
 from retrofit.case.exchangers import Condenser, Evaporator, Exchanger
 from retrofit.case.keys import meaning, quantity
 from retrofit.case.law import EQUIPMENT, Law
+from retrofit.case.logo import Logo
 from retrofit.case.model import Case, Default
 from retrofit.case.money import Items, Money, Option, Options, Range
 from retrofit.case.numbers import EfficiencyPoint, FilmFactors
+from retrofit.case.paper import Report, Revision
 from retrofit.case.pipework import GasLine, Lines, LiquidLine, Receiver, Valve
 from retrofit.case.plant import Compare, Duty, Plant
 from retrofit.case.plus_minus import PlusMinus
@@ -45,6 +47,7 @@ __all__ = [
     "Law",
     "Lines",
     "LiquidLine",
+    "Logo",
     "MachineryRoom",
     "Money",
     "Option",
@@ -55,6 +58,8 @@ __all__ = [
     "Range",
     "Readings",
     "Receiver",
+    "Report",
+    "Revision",
     "Room",
     "Threshold",
     "Thresholds",

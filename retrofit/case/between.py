@@ -45,6 +45,7 @@ def problems_between_keys(written: Written) -> Complaints:
     yield from _power_against_current(written)
     yield from _repeated(written, "plant.metals")
     yield from _repeated(written, "compare.candidates", written.value("plant.refrigerant"))
+    yield from _chosen(written)
     yield from _thresholds(written)
 
 
@@ -196,6 +197,23 @@ def _repeated(written: Written, key: str, existing: str | None = None) -> Compla
         elif name is not None and name in seen:
             yield where, f"{name} is in the list twice; leave one out"
         seen.add(name)
+
+
+def _chosen(written: Written) -> Complaints:
+    """What the report recommends and falls back on are refrigerants of the comparison, and two."""
+    existing, candidates = written.value("plant.refrigerant"), written.value("compare.candidates") or []
+    if existing is None or not candidates or None in candidates:
+        return
+    known = [existing, *candidates]
+    chosen = {name: written.value(f"report.{name}") for name in ("recommended", "fallback")}
+    for name, refrigerant in chosen.items():
+        if refrigerant is not None and refrigerant not in known:
+            yield (
+                path_of(f"report.{name}"),
+                f"{refrigerant} is not compared here; write {listed(known)}, or add it to compare.candidates",
+            )
+    if chosen["fallback"] is not None and chosen["fallback"] == chosen["recommended"]:
+        yield path_of("report.fallback"), f"{chosen['fallback']} is what is recommended; name another, or leave it out"
 
 
 def _thresholds(written: Written) -> Complaints:

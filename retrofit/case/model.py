@@ -19,6 +19,7 @@ from retrofit.case.emissions import Emissions
 from retrofit.case.exchangers import Condenser, Evaporator
 from retrofit.case.law import Law
 from retrofit.case.money import Money, Options
+from retrofit.case.paper import Report
 from retrofit.case.pipework import Lines, Receiver, Valve
 from retrofit.case.plant import Compare, Duty, Plant
 from retrofit.case.plus_minus import PlusMinus
@@ -61,6 +62,7 @@ class CaseFile(Table):
     money: Money | None = key("money", "Prices, in the user's currency.", None)
     options: Options | None = key("options", "What each option costs, and how it differs.", None)
     plus_minus: PlusMinus | None = key("plus_minus", "How far inputs may be off, by their keys.", None)
+    report: Report | None = key("report", "What stands on the report besides results.", None)
     thresholds: Thresholds | None = key("thresholds", "The user's own thresholds of the checks.", None)
 
 
@@ -128,6 +130,7 @@ class Case:
     law: Law | None = None
     room: Room | None = None
     machinery_room: MachineryRoom | None = None
+    report: Report | None = None
     thresholds: Thresholds | None = None
     year: Year | None = None
     emissions: Emissions | None = None

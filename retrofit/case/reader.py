@@ -45,9 +45,10 @@ def read_case(path: str | os.PathLike[str]) -> Case:
     data, lines = parsed(text, name)
     written = Written(data)
     heats = tuple(_medium_heats(written))
+    context = {"p_ambient_Pa": written.p_ambient_Pa, "folder": Path(path).parent}
     problems = list(problems_between_keys(written))
     try:
-        model = CaseFile.model_validate(_completed(data, heats), context={"p_ambient_Pa": written.p_ambient_Pa})
+        model = CaseFile.model_validate(_completed(data, heats), context=context)
     except ValidationError as error:
         problems += [(tuple(found["loc"]), complaint(found)) for found in error.errors(include_url=False)]
         model = None

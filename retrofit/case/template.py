@@ -193,6 +193,21 @@ match = "mean"                   # refrigerants are compared at equal mean (or d
 # product_below_minus_50 = false   # whether a product is cooled below -50 degC
 # code = "EN 378"                # charge rules for the room: ASHRAE 15, EN 378, ISO 5149 or both
 
+# [report]                       # what stands on the report besides results
+# client = "Client to be named"
+# site = "Where the plant stands"
+# system_id = "Plant 1"          # as the client's lists call it
+# company = "Company to be named"
+# logo = "logo.svg"              # PNG, JPEG or SVG; its path is counted from this file
+# prepared = "Engineer to be named"
+# checked = "Second engineer to be named"
+# approved = "Head of office to be named"
+# decide_by = "2027-01-31"
+# revisions = [["A", "2026-12-01", "first issue", "engineer"]]   # revision, day, what changed, by whom
+# recommended = "R448A"          # your recommendation: a candidate, or the refrigerant of today to keep
+# fallback = "R449A"
+# conditions = ["The cases are cleaned before the change."]   # your own, after those that were found
+
 # [thresholds]                   # your own, instead of those that the checks come with
 # capacity = {{work = 1.0, stop = 0.9}}
 """

@@ -54,14 +54,16 @@ class LeftOut:
 
 
 def inputs(case: Case, units: UnitSystem) -> tuple[Input, ...]:
-    """Return what the case file gives, in its own words and in the reader's units.
+    """Return what the case file gives, in its own words and in the reader's units; not what only the report shows.
 
     Args:
         case: The case.
         units: The reader's units.
     """
     return tuple(
-        Input(key, meaning(key), written, _used(case, key, units)) for key, written in case.given.items() if "." in key
+        Input(key, meaning(key), written, _used(case, key, units))
+        for key, written in case.given.items()
+        if "." in key and not key.startswith("report.")
     )
 
 
@@ -85,7 +87,7 @@ def missing(case: Case) -> tuple[LeftOut, ...]:
             found += [LeftOut(table, ())] if "." not in table else []
         elif keys := tuple(key for key in _keys(table) if _is_open(f"{table}.{key}", taken)):
             found.append(LeftOut(table, keys))
-    return tuple(item for item in found if item.table != "thresholds")
+    return tuple(item for item in found if item.table not in ("thresholds", "report"))
 
 
 def _keys(table: str) -> list[str]:

@@ -21,6 +21,7 @@ from retrofit.errors import CaseFileError, QuantityError
 from retrofit.refrigerants import designations
 from retrofit.units import KINDS, parse_quantity
 
+LOGO = '<svg xmlns="http://www.w3.org/2000/svg"/>'
 CASES = sorted((Path(__file__).resolve().parents[2] / "cases").glob("*.toml"))
 
 
@@ -253,6 +254,7 @@ def opened(text, mark="# "):
 def test_a_new_case_reads_with_its_optional_keys_taken_in(tmp_path, validator):
     """Every key that the starting case shows as a remark is valid too, and leaves nothing to a default."""
     path = tmp_path / "new.toml"
+    (tmp_path / "logo.svg").write_text(LOGO, "utf-8")
     path.write_text(opened(new_case_text()), "utf-8")
 
     case = read_case(path)
@@ -280,6 +282,7 @@ def test_a_new_case_reads_with_the_other_ways_taken_in(tmp_path):
         text = text.replace(f"\n{other}", f"\n# without {other}")
     text = text.replace('# speed = "variable"', 'speed = "steps"').replace("# lowest_speed", "# without lowest_speed")
     path = tmp_path / "new.toml"
+    (tmp_path / "logo.svg").write_text(LOGO, "utf-8")
     path.write_text(opened(opened(text, "#| ")), "utf-8")
 
     case = read_case(path)
