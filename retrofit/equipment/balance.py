@@ -2,7 +2,8 @@
 
 Two unknowns for each condition, the evaporating and the condensing dew temperature; two equations, one for each
 exchanger: the mean temperature difference the temperatures give equals the one its conductance asks for. They are
-solved on whole arrays of conditions by Newton's method with Broyden's update of the slopes.
+solved on whole arrays of conditions by Newton's method with Broyden's update of the slopes. Where a head-pressure
+control holds the condensing pressure, that pressure takes the place of the condenser's equation.
 """
 
 from __future__ import annotations
@@ -59,6 +60,8 @@ class Machine:
         superheat_share, subcooling_share: Useful superheat and subcooling take at most these shares of the
             difference between the medium's inlet and dew or bubble point: an exchanger hardly loaded cannot
             reach what is set.
+        isentropic_factor, volumetric_factor: Factors on both efficiencies, which stay at most 1.
+        T_cond_lowest_K: Condensing dew temperature that a head-pressure control does not go below.
     """
 
     swept_volume_m3_per_s: ArrayLike
@@ -66,8 +69,11 @@ class Machine:
     evaporator: Exchanger
     condenser: Exchanger
     settings: Settings
-    superheat_share: float = np.inf
-    subcooling_share: float = np.inf
+    superheat_share: ArrayLike = np.inf
+    subcooling_share: ArrayLike = np.inf
+    isentropic_factor: ArrayLike = 1.0
+    volumetric_factor: ArrayLike = 1.0
+    T_cond_lowest_K: ArrayLike = -np.inf
 
 
 @dataclass(frozen=True)
@@ -150,7 +156,8 @@ def balance(
     machine: Machine,
     T_evap_start_K: ArrayLike,
     T_cond_start_K: ArrayLike,
-    cooling_W: ArrayLike | None = None,
+    load_W: ArrayLike | None = None,
+    serves: str = "cooling",
 ) -> Balance:
     """Find where a plant settles with a refrigerant.
 
@@ -159,19 +166,26 @@ def balance(
         machine: The plant; every number may be an array over conditions.
         T_evap_start_K: Evaporating dew temperature to start from. [K]
         T_cond_start_K: Condensing dew temperature to start from. [K]
-        cooling_W: If given, the plant delivers this cooling with whatever swept volume that takes; else it
-            runs with its own swept volume. [W]
+        load_W: If given, the plant delivers this load with whatever swept volume that takes; else, and where
+            it is NaN, it runs with its own swept volume. [W]
+        serves: Whether the load is "cooling", or "heating" by the condenser.
     Returns: The balance, over the broadcast shape of everything given; a condition without a solution has NaN
         and a reason, and touches no other.
     Source: Newton's method with Broyden's (1965) update of the slopes, each condition for itself.
     """
-    conditions = _Conditions.of(machine, T_evap_start_K, T_cond_start_K, cooling_W)
+    if serves not in SERVES:
+        raise ValueError(f"a plant serves one of {', '.join(SERVES)}, not {serves!r}")
+    load = np.nan if load_W is None else load_W
+    loads = {name: load if name == serves else np.nan for name in SERVES}
+    conditions = _Conditions.of(machine, T_evap_start_K, T_cond_start_K, loads)
     inside = fluid.as_lenient()
     parts = [_solve(inside, machine, conditions.part(i, i + CHUNK)) for i in range(0, conditions.size, CHUNK)]
     return _joined(parts, conditions.shape)
 
 
 SETTINGS = tuple(item.name for item in fields(Settings) if not item.name.endswith("efficiency"))
+SERVES = ("cooling", "heating")
+LIMITS = ("superheat_share", "subcooling_share", "isentropic_factor", "volumetric_factor", "T_cond_lowest_K")
 
 
 @dataclass(frozen=True)
@@ -182,15 +196,17 @@ class _Conditions:
     arrays: Mapping[str, FloatArray]
 
     @classmethod
-    def of(cls, machine: Machine, T_evap_K: ArrayLike, T_cond_K: ArrayLike, cooling_W: ArrayLike | None) -> _Conditions:
-        given: dict[str, ArrayLike] = {"T_evap": T_evap_K, "T_cond": T_cond_K}
-        given["cooling"] = np.nan if cooling_W is None else cooling_W
+    def of(
+        cls, machine: Machine, T_evap_K: ArrayLike, T_cond_K: ArrayLike, loads_W: Mapping[str, ArrayLike]
+    ) -> _Conditions:
+        given: dict[str, ArrayLike] = {"T_evap": T_evap_K, "T_cond": T_cond_K, **loads_W}
         given["swept"] = machine.swept_volume_m3_per_s
         for name, exchanger in (("evap", machine.evaporator), ("cond", machine.condenser)):
             given[f"UA_{name}"] = exchanger.conductance_W_per_K
             given[f"T_in_{name}"] = exchanger.secondary.T_in_K
             given[f"rate_{name}"] = exchanger.secondary.capacity_rate_W_per_K
         given |= {name: getattr(machine.settings, name) for name in SETTINGS}
+        given |= {name: getattr(machine, name) for name in LIMITS}
         values = {name: np.asarray(value, dtype=float) for name, value in given.items()}
         shape = np.broadcast_shapes(*(value.shape for value in values.values()))
         return cls(shape, {name: np.broadcast_to(value, shape).reshape(-1) for name, value in values.items()})
@@ -219,7 +235,9 @@ def _state(fluid: Fluid, machine: Machine, given: Mapping[str, FloatArray], T: F
     p_evap, p_cond = fluid.p_dew(T[0]), fluid.p_dew(T[1])
     p_suction = fluid.p_dew(T[0] - given["suction_drop_K"])
     isentropic, volumetric = machine.efficiencies(fluid.p_dew(T[1] + given["discharge_drop_K"]) / p_suction, p_suction)
-    superheat, subcooling = _in_reach(fluid, machine, given, T[0], p_cond)
+    isentropic = np.minimum(isentropic * given["isentropic_factor"], 1.0)
+    volumetric = np.minimum(volumetric * given["volumetric_factor"], 1.0)
+    superheat, subcooling = _in_reach(fluid, given, T[0], p_cond)
     held = {name: given[name] for name in SETTINGS} | {
         "useful_superheat_K": superheat,
         "subcooling_K": subcooling,
@@ -227,8 +245,9 @@ def _state(fluid: Fluid, machine: Machine, given: Mapping[str, FloatArray], T: F
     settings = Settings(isentropic_efficiency=isentropic, volumetric_efficiency=volumetric, **held)
     cycle = solve_cycle(fluid, p_evap, p_cond, settings)
     per_swept = volumetric * cycle.density_suction_kg_per_m3
-    is_fixed = np.isnan(given["cooling"])
-    mass_flow = np.where(is_fixed, given["swept"] * per_swept, given["cooling"] / cycle.refrigerating_effect_J_per_kg)
+    mass_flow = given["swept"] * per_swept
+    for load, effect in zip(SERVES, (cycle.refrigerating_effect_J_per_kg, cycle.heat_rejected_J_per_kg), strict=True):
+        mass_flow = np.where(np.isnan(given[load]), mass_flow, given[load] / effect)
     cooling, heat = mass_flow * cycle.refrigerating_effect_J_per_kg, mass_flow * cycle.heat_rejected_J_per_kg
     evaporator = replace(machine.evaporator, secondary=Secondary(given["T_in_evap"], given["rate_evap"]))
     condenser = replace(machine.condenser, secondary=Secondary(given["T_in_cond"], given["rate_cond"]))
@@ -239,21 +258,20 @@ def _state(fluid: Fluid, machine: Machine, given: Mapping[str, FloatArray], T: F
             condenser_difference(fluid, cycle, heat, condenser),
         ]
     )
-    return _State(cycle, mass_flow, mass_flow / per_swept, there - needed, needed)
+    lack = there - needed
+    # A head-pressure control throttles the condenser: either it carries the heat, or condensing stays at its lowest.
+    lack[1] = np.minimum(lack[1], T[1] - given["T_cond_lowest_K"])
+    return _State(cycle, mass_flow, mass_flow / per_swept, lack, needed)
 
 
 def _in_reach(
-    fluid: Fluid, machine: Machine, given: Mapping[str, FloatArray], T_evap: FloatArray, p_cond: FloatArray
+    fluid: Fluid, given: Mapping[str, FloatArray], T_evap: FloatArray, p_cond: FloatArray
 ) -> tuple[FloatArray, FloatArray]:
     """Return useful superheat and subcooling as set, or as far as the media let them come."""
-    superheat, subcooling = given["useful_superheat_K"], given["subcooling_K"]
-    if np.isfinite(machine.superheat_share):
-        lead = np.maximum(given["T_in_evap"] - T_evap, SMALLEST_LEAD_K)
-        superheat = np.minimum(superheat, machine.superheat_share * lead)
-    if np.isfinite(machine.subcooling_share):
-        lead = np.maximum(fluid.bubble(p_cond).T_K - given["T_in_cond"], SMALLEST_LEAD_K)
-        subcooling = np.minimum(subcooling, machine.subcooling_share * lead)
-    return superheat, subcooling
+    leads = given["T_in_evap"] - T_evap, fluid.bubble(p_cond).T_K - given["T_in_cond"]
+    shares = given["superheat_share"], given["subcooling_share"]
+    reach = [np.maximum(lead, SMALLEST_LEAD_K) * share for lead, share in zip(leads, shares, strict=True)]
+    return np.minimum(given["useful_superheat_K"], reach[0]), np.minimum(given["subcooling_K"], reach[1])
 
 
 def _solve(fluid: Fluid, machine: Machine, conditions: _Conditions) -> Balance:

@@ -13,7 +13,7 @@ from retrofit.equipment.oil import changes_needed
 from retrofit.equipment.vessels import co2_equivalent_t, cylinders_needed, vessel_fill
 from retrofit.errors import NoSolutionError, OutsideValidRangeError, RetrofitError
 from retrofit.properties import Fluid, fluid
-from retrofit.study.compare import site_of
+from retrofit.study.today import today_of
 from retrofit.study.hardware.numbers import HardwareNumbers
 from retrofit.study.installed import ExistingPlant, run_at_condenser_inlet
 from retrofit.study.practice import practice
@@ -253,7 +253,7 @@ def _expected(
     if numbers.basis != "plant":
         return (), entry.plant_reason or comparison.existing.plant_reason or "the plant as installed is not computed"
     try:
-        site = site_of(case, fluid(case.plant.refrigerant))
+        site = today_of(case, fluid(case.plant.refrigerant)).site
         behaviour = fluid(entry.refrigerant.designation)
     except RetrofitError as error:
         return (), error.message

@@ -3,39 +3,25 @@
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass, fields, replace
+from dataclasses import fields, replace
 from importlib.metadata import version
 
 import numpy as np
 
 import retrofit
 from retrofit.case import Case
-from retrofit.cycle import (
-    Cycle,
-    Settings,
-    Temperatures,
-    cycle_temperatures,
-    matched_pressures,
-    state_points,
-)
-from retrofit.errors import NoSolutionError, OutsideValidRangeError, RetrofitError
+from retrofit.cycle import state_points
+from retrofit.errors import NoSolutionError, RetrofitError
 from retrofit.properties import Fluid, fluid, grade
 from retrofit.refrigerants import Refrigerant, cautions_for, change_cautions, find
 from retrofit.study.baseline import baseline, case_with_readings
 from retrofit.study.hardware import run as hardware
-from retrofit.study.hardware.conditions import Site, cycle_between
-from retrofit.study.installed import (
-    EfficiencyModel,
-    ExistingPlant,
-    efficiency_model,
-    existing_plant,
-    run_installed,
-)
+from retrofit.study.installed import run_installed
 from retrofit.study.lines import chart_lines
 from retrofit.study.performance import as_numbers, at_swept_volume, performance
 from retrofit.study.result import Baseline, Comparison, Entry, Installed, Point
+from retrofit.study.today import Today, today_of
 
-KELVIN = 273.15
 # Ratios to the existing refrigerant: name, basis, quantity of the performance.
 RATIOS = (
     ("cop", "duty", "cop"),
@@ -55,24 +41,6 @@ RATIOS = (
 OnBuild = Callable[[str], None]
 
 
-@dataclass(frozen=True)
-class _Today:
-    """What every refrigerant is compared with and matched to, once the existing one is solved."""
-
-    case: Case
-    settings: Settings
-    model: EfficiencyModel
-    targets: Temperatures
-    swept_volume_m3_per_s: float
-    plant: ExistingPlant | None
-    plant_reason: str | None
-
-    @property
-    def site(self) -> Site:
-        """Return what the hardware is reckoned with."""
-        return Site(self.case, self.settings, self.model, self.targets, self.swept_volume_m3_per_s, self.plant)
-
-
 def compare(case: Case, on_build: OnBuild | None = None) -> Comparison:
     """Compare the candidates of a case with its existing refrigerant.
 
@@ -84,13 +52,13 @@ def compare(case: Case, on_build: OnBuild | None = None) -> Comparison:
     refrigerant = find(case.plant.refrigerant)
     existing = Entry(refrigerant, "keep", "not computed", None, cautions_for(refrigerant))
     found: Baseline | None = None
-    today: _Today | None = None
+    today: Today | None = None
     parts: hardware.Today | None = None
     try:
         behaviour = fluid(refrigerant.designation, on_build)
         found = baseline(case, behaviour)
         case = case_with_readings(case, found)
-        today = _today(case, behaviour)
+        today = today_of(case, behaviour)
         existing = _solved(today, existing, behaviour)
         parts = hardware.today_of(today.site, behaviour, existing)
         existing = _against(existing, existing, parts, behaviour)
@@ -101,75 +69,15 @@ def compare(case: Case, on_build: OnBuild | None = None) -> Comparison:
         case=case,
         existing=existing,
         candidates=tuple(candidates),
-        swept_volume_m3_per_s=today.swept_volume_m3_per_s if today else case.compressor.swept_volume_m3_per_s,
+        swept_volume_m3_per_s=float(today.swept_volume_m3_per_s) if today else case.compressor.swept_volume_m3_per_s,
         swept_volume_from="duty" if case.compressor.swept_volume_m3_per_s is None else "case",
         versions={"retrofit": retrofit.__version__, "coolprop": version("CoolProp")},
         baseline=found,
     )
 
 
-def _today(case: Case, existing: Fluid) -> _Today:
-    """Solve the existing refrigerant from its reading: targets, swept volume and the plant as installed."""
-    _check_subcooling(case)
-    settings, model = _settings(case), efficiency_model(case, existing)
-    reading = Temperatures(case.duty.T_evap_K, case.duty.T_cond_K, case.duty.reading)
-    targets = cycle_temperatures(_cycle(existing, reading, settings, model), case.compare.match)
-    # From here on the existing refrigerant goes the way of every other, so that against itself nothing changes.
-    cycle = _cycle(existing, targets, settings, model)
-    given = case.compressor.swept_volume_m3_per_s
-    swept = given or float(performance(cycle, case.duty.cooling_W).swept_volume_m3_per_s)
-    plant, reason = None, None
-    try:
-        plant = existing_plant(case, existing, cycle, model, swept)
-    except NoSolutionError as error:
-        reason = error.message
-    return _Today(case, settings, model, targets, swept, plant, reason)
-
-
-def site_of(case: Case, existing: Fluid) -> Site:
-    """Return what a result was reckoned with, to ask the same plant about further conditions.
-
-    Args:
-        case: The case of a `Comparison`, its readings applied.
-        existing: The refrigerant in the plant.
-    Raises: RetrofitError as `compare` has it for the existing refrigerant.
-    """
-    return _today(case, existing).site
-
-
-def _cycle(behaviour: Fluid, temperatures: Temperatures, settings: Settings, model: EfficiencyModel) -> Cycle:
-    """Solve the cycle of a refrigerant at temperatures, with the compressor's efficiencies at its own pressures."""
-    p_evap, p_cond = matched_pressures(behaviour, temperatures, settings.subcooling_K)
-    return cycle_between(behaviour, p_evap, p_cond, settings, model)
-
-
-def _settings(case: Case) -> Settings:
-    """Return what the case holds equal for every refrigerant; efficiencies follow from each one's pressures."""
-    duty, evaporator, condenser = case.duty, case.evaporator, case.condenser
-    return Settings(
-        useful_superheat_K=duty.useful_superheat_K,
-        line_superheat_K=duty.line_superheat_K,
-        subcooling_K=duty.subcooling_K,
-        heat_loss_share=case.compressor.heat_loss or 0.0,
-        suction_drop_K=evaporator.pressure_drop_K if evaporator else 0.0,
-        discharge_drop_K=condenser.pressure_drop_K if condenser else 0.0,
-    )
-
-
-def _check_subcooling(case: Case) -> None:
-    """Refuse liquid that would be colder than the evaporator, before a model says so in its own terms."""
-    duty = case.duty
-    liquid_K = duty.T_cond_K - duty.subcooling_K
-    if liquid_K <= duty.T_evap_K:
-        liquid, evaporator = f"{liquid_K - KELVIN:.1f} degC", f"{duty.T_evap_K - KELVIN:.1f} degC"
-        raise OutsideValidRangeError(
-            f"with {duty.subcooling_K:g} K of subcooling the liquid at the expansion valve, {liquid}, would be "
-            f"no warmer than the evaporator, {evaporator}; give less subcooling"
-        )
-
-
 def _candidate(
-    today: _Today | None,
+    today: Today | None,
     parts: hardware.Today | None,
     refrigerant: Refrigerant,
     existing: Entry,
@@ -189,9 +97,9 @@ def _candidate(
         return replace(entry, reason=error.message)
 
 
-def _solved(today: _Today, entry: Entry, behaviour: Fluid) -> Entry:
+def _solved(today: Today, entry: Entry, behaviour: Fluid) -> Entry:
     """Solve a refrigerant on every basis; a plant that does not balance leaves the other bases standing."""
-    cycle = _cycle(behaviour, today.targets, today.settings, today.model)
+    cycle = today.cycle(behaviour)
     duty = as_numbers(performance(cycle, today.case.duty.cooling_W))
     installed, reason = None, today.plant_reason
     if today.plant is not None:
@@ -205,7 +113,7 @@ def _solved(today: _Today, entry: Entry, behaviour: Fluid) -> Entry:
         status="ok",
         grade=grade(behaviour, entry.refrigerant),
         duty=duty,
-        compressor=at_swept_volume(duty, today.swept_volume_m3_per_s),
+        compressor=at_swept_volume(duty, float(today.swept_volume_m3_per_s)),
         plant=installed,
         plant_reason=reason,
         points=tuple(_point(state) for state in state_points(behaviour, cycle)),

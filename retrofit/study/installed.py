@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, fields, replace
 from typing import Protocol
 
 import numpy as np
@@ -19,11 +19,12 @@ from retrofit.equipment.balance import (
     condenser_difference,
     evaporator_difference,
 )
-from retrofit.equipment.compressor import EfficiencyCurve, operation
+from retrofit.equipment.compressor import EfficiencyCurve
 from retrofit.equipment.exchanger import Secondary
 from retrofit.equipment.polynomial import CompressorRating, efficiencies_of
 from retrofit.errors import NoSolutionError
 from retrofit.properties import Fluid
+from retrofit.study.operating import operating
 from retrofit.study.performance import as_numbers, performance
 from retrofit.study.result import FloatArray, Installed, Operation, Performance
 
@@ -86,7 +87,7 @@ def _rating(table: Polynomial) -> CompressorRating:
 
 @dataclass(frozen=True)
 class ExistingPlant:
-    """The existing machine with the conductances that today's point gives it.
+    """The existing machine with the conductances that today's point gives it; arrays where the case has them.
 
     Attributes:
         machine: The machine, with today's conductances.
@@ -98,13 +99,13 @@ class ExistingPlant:
     case: Case
     machine: Machine
     model: EfficiencyModel
-    needed_W: float
-    today_W: float
-    start_K: tuple[float, float]
+    needed_W: FloatArray
+    today_W: FloatArray
+    start_K: tuple[FloatArray, FloatArray]
 
 
 def existing_plant(
-    case: Case, existing: Fluid, cycle: Cycle, model: EfficiencyModel, swept_volume_m3_per_s: float
+    case: Case, existing: Fluid, cycle: Cycle, model: EfficiencyModel, swept_volume_m3_per_s: ArrayLike
 ) -> ExistingPlant:
     """Return the plant as installed, its conductances from today's point.
 
@@ -120,17 +121,17 @@ def existing_plant(
     Raises: NoSolutionError if the case does not describe both exchangers, or temperatures cross in one.
     """
     _, volumetric = model.at(cycle.pressure_ratio, cycle.p_suction_Pa)
-    mass_flow = swept_volume_m3_per_s * volumetric * cycle.density_suction_kg_per_m3
+    mass_flow = np.asarray(swept_volume_m3_per_s) * volumetric * cycle.density_suction_kg_per_m3
     cooling = mass_flow * cycle.refrigerating_effect_J_per_kg
     heat = mass_flow * cycle.heat_rejected_J_per_kg
     evaporator = _exchanger("evaporator", case.evaporator, cooling)
     condenser = _exchanger("condenser", case.condenser, -heat)
-    differences = {
-        "evaporator": float(evaporator_difference(existing, cycle, cooling, evaporator)),
-        "condenser": float(condenser_difference(existing, cycle, heat, condenser)),
+    conductances = {
+        "evaporator": cooling / _open(evaporator_difference(existing, cycle, cooling, evaporator)),
+        "condenser": heat / _open(condenser_difference(existing, cycle, heat, condenser)),
     }
-    for name, difference in differences.items():
-        if difference <= 0.0:
+    for name, conductance in conductances.items():
+        if np.all(np.isnan(conductance)):
             raise NoSolutionError(
                 f"at today's point the temperatures of refrigerant and medium cross in the {name}: check its inlet, "
                 "outlet and flow against the evaporating and condensing temperature"
@@ -138,29 +139,33 @@ def existing_plant(
     machine = Machine(
         swept_volume_m3_per_s=swept_volume_m3_per_s,
         efficiencies=lambda ratio, p: model.at(ratio, p),
-        evaporator=replace(evaporator, conductance_W_per_K=float(cooling) / differences["evaporator"]),
-        condenser=replace(condenser, conductance_W_per_K=float(heat) / differences["condenser"]),
+        evaporator=replace(evaporator, conductance_W_per_K=conductances["evaporator"]),
+        condenser=replace(condenser, conductance_W_per_K=conductances["condenser"]),
         settings=cycle.settings,
         superheat_share=_superheat_share(cycle, evaporator),
         subcooling_share=_subcooling_share(cycle, condenser),
     )
-    start = float(cycle.T_evap_dew_K), float(cycle.T_cond_dew_K)
-    needed = min(case.duty.cooling_W, float(cooling))
-    return ExistingPlant(case, machine, model, needed, float(cooling), start)
+    start = cycle.T_evap_dew_K, cycle.T_cond_dew_K
+    return ExistingPlant(case, machine, model, np.minimum(case.duty.cooling_W, cooling), cooling, start)
 
 
-def _superheat_share(cycle: Cycle, evaporator: Exchanger) -> float:
+def _open(difference_K: FloatArray) -> FloatArray:
+    """Return a mean temperature difference, NaN where the temperatures cross."""
+    return np.where(difference_K > 0.0, difference_K, np.nan)
+
+
+def _superheat_share(cycle: Cycle, evaporator: Exchanger) -> ArrayLike:
     """Return the largest share of the inlet difference that superheat takes: a usual one, or today's if larger."""
     if evaporator.arrangement == "flooded":
-        return float(np.inf)
+        return np.inf
     lead = np.asarray(evaporator.secondary.T_in_K) - cycle.T_evap_dew_K
-    return max(USUAL_SUPERHEAT_SHARE, float(np.asarray(cycle.settings.useful_superheat_K) / lead))
+    return np.maximum(USUAL_SUPERHEAT_SHARE, np.asarray(cycle.settings.useful_superheat_K) / lead)
 
 
-def _subcooling_share(cycle: Cycle, condenser: Exchanger) -> float:
+def _subcooling_share(cycle: Cycle, condenser: Exchanger) -> ArrayLike:
     """Return the largest share of the inlet difference that subcooling takes: a usual one, or today's if larger."""
     lead = cycle.T_cond_bubble_K - np.asarray(condenser.secondary.T_in_K)
-    return max(USUAL_SUBCOOLING_SHARE, float(np.asarray(cycle.settings.subcooling_K) / lead))
+    return np.asarray(np.maximum(USUAL_SUBCOOLING_SHARE, np.asarray(cycle.settings.subcooling_K) / lead))
 
 
 def _exchanger(name: str, table: ExchangerTable | None, heat_W: FloatArray) -> Exchanger:
@@ -168,9 +173,9 @@ def _exchanger(name: str, table: ExchangerTable | None, heat_W: FloatArray) -> E
     if table is None or table.inlet_K is None or table.arrangement is None:
         raise NoSolutionError(f"[{name}] with inlet, outlet (or flow) and arrangement is not given in the case")
     if table.outlet_K is not None:
-        rate = abs(float(heat_W) / (table.inlet_K - table.outlet_K))
+        rate = np.abs(heat_W / (table.inlet_K - table.outlet_K))
     elif table.flow_kg_per_s is not None and table.specific_heat_J_per_kgK is not None:
-        rate = table.flow_kg_per_s * table.specific_heat_J_per_kgK
+        rate = np.asarray(table.flow_kg_per_s * table.specific_heat_J_per_kgK)
     else:
         raise NoSolutionError(f"[{name}] gives neither outlet nor flow with specific heat")
     return Exchanger(1.0, Secondary(table.inlet_K, rate), table.arrangement)
@@ -200,7 +205,7 @@ def run_installed(plant: ExistingPlant, behaviour: Fluid) -> Installed:
     return Installed(
         full=full,
         same_cooling=same,
-        operation=_operation(plant, behaviour, full, factors),
+        operation=_operation(plant, behaviour, every, factors),
         is_covered=bool(is_covered[0]),
         film_factors=factors,
         cooling_with_equal_films_W=float(cooling[2]),
@@ -242,37 +247,16 @@ def _with_films(machine: Machine, factors: ArrayLike) -> Machine:
 
 
 def _operation(
-    plant: ExistingPlant, behaviour: Fluid, full: Performance[float], factors: tuple[float, float]
-) -> Operation:
-    """Return how the machine meets the cooling needed: part of the time, at part speed, or not at all."""
-    compressor, needed = plant.case.compressor, plant.needed_W
-    kind = compressor.speed or "fixed"
-    share = min(1.0, needed / full.cooling_W)
-    if kind == "variable" and share < 1.0:
-        return _slowed(plant, behaviour, factors)
-    run_time, speed = operation(kind, compressor.steps or 1, compressor.lowest_speed or 1.0, share)
-    return Operation(
-        control=kind,
-        cooling_needed_W=needed,
-        unmet_W=max(0.0, needed - full.cooling_W),
-        run_time_fraction=float(run_time),
-        speed_fraction=float(speed),
-        mean_power_W=full.power_W * share,
-    )
-
-
-def _slowed(plant: ExistingPlant, behaviour: Fluid, factors: tuple[float, float]) -> Operation:
-    """Return the operation at the speed that just delivers the cooling needed, with the exchangers less loaded."""
-    machine, needed = _with_films(plant.machine, factors), plant.needed_W
-    swept = float(np.asarray(machine.swept_volume_m3_per_s))
-    just = _solved(plant, behaviour, machine, needed)
-    speed = just.swept_volume_m3_per_s / swept
-    lowest = plant.case.compressor.lowest_speed or speed
-    if speed >= lowest:
-        return Operation("variable", needed, 0.0, 1.0, speed, just.power_W)
-    slow = _solved(plant, behaviour, replace(machine, swept_volume_m3_per_s=lowest * swept))
-    run_time = needed / slow.cooling_W
-    return Operation("variable", needed, 0.0, run_time, lowest, slow.power_W * run_time)
+    plant: ExistingPlant, behaviour: Fluid, every: Performance[FloatArray], factors: tuple[float, float]
+) -> Operation[float]:
+    """Return how the machine meets the cooling needed, from what it does at full, the first of every condition."""
+    full = Performance(**{item.name: getattr(every, item.name)[0] for item in fields(Performance)})
+    machine, compressor = _with_films(plant.machine, factors), plant.case.compressor
+    found = operating(behaviour, machine, compressor, full, plant.needed_W, plant.start_K)
+    if np.isnan(found.mean_power_W):
+        raise NoSolutionError(f"{behaviour.designation} in the plant as installed: no solution at part speed")
+    numbers = {item.name: float(getattr(found, item.name)) for item in fields(Operation) if item.name != "control"}
+    return Operation(control=found.control, **numbers)
 
 
 def _solved(

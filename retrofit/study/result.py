@@ -68,23 +68,23 @@ class Performance(Generic[Number]):
 
 
 @dataclass(frozen=True)
-class Operation:
-    """How the plant as installed meets the cooling it has to deliver.
+class Operation(Generic[Number]):
+    """How the plant as installed meets the load it has to deliver; numbers, or arrays over conditions.
 
     Attributes:
         control: "fixed", "steps" or "variable".
-        cooling_needed_W: Cooling to deliver.
-        unmet_W: Cooling it lacks though it runs all the time.
+        cooling_needed_W: Cooling to deliver; in a year of heating, heat.
+        unmet_W: What it lacks of that though it runs all the time.
         run_time_fraction, speed_fraction: Share of the time it runs, and speed while it runs.
         mean_power_W: Compressor power, mean over the time.
     """
 
     control: str
-    cooling_needed_W: float
-    unmet_W: float
-    run_time_fraction: float
-    speed_fraction: float
-    mean_power_W: float
+    cooling_needed_W: Number
+    unmet_W: Number
+    run_time_fraction: Number
+    speed_fraction: Number
+    mean_power_W: Number
 
 
 @dataclass(frozen=True)
@@ -105,7 +105,7 @@ class Installed:
 
     full: Performance[float]
     same_cooling: Performance[float]
-    operation: Operation
+    operation: Operation[float]
     is_covered: bool
     film_factors: tuple[float, float]
     cooling_with_equal_films_W: float

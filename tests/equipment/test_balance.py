@@ -151,7 +151,7 @@ def test_cooling_less_makes_cop_look_better_than_it_is() -> None:
     machine = plant()
     today = balance(fluid("R404A"), machine, 265.0, 315.0)
     small = balance(fluid("R134a"), machine, 265.0, 305.0)
-    same = balance(fluid("R134a"), machine, 265.0, 315.0, cooling_W=float(cooling_of(today)))
+    same = balance(fluid("R134a"), machine, 265.0, 315.0, load_W=float(cooling_of(today)))
 
     assert small.cycle.cop / today.cycle.cop > 1.3
     assert same.cycle.cop / today.cycle.cop < 1.2
