@@ -24,8 +24,8 @@ from retrofit.equipment.exchanger import Secondary
 from retrofit.equipment.polynomial import CompressorRating, efficiencies_of
 from retrofit.errors import NoSolutionError
 from retrofit.properties import Fluid
-from retrofit.study.operating import operating
-from retrofit.study.performance import as_numbers, performance
+from retrofit.study.operating import balanced, operating
+from retrofit.study.performance import as_numbers
 from retrofit.study.result import FloatArray, Installed, Operation, Performance
 
 Pair = tuple[FloatArray, FloatArray]
@@ -197,8 +197,7 @@ def run_installed(plant: ExistingPlant, behaviour: Fluid) -> Installed:
     for reason in found.reason[:2]:
         if reason:
             raise NoSolutionError(f"{behaviour.designation} in the plant as installed: {reason}")
-    cooling = found.mass_flow_kg_per_s * found.cycle.refrigerating_effect_J_per_kg
-    every = performance(found.cycle, cooling)
+    every = balanced(found)
     full, same = as_numbers(every, 0), as_numbers(every, 1)
     is_covered = plant.model.covers(found.cycle.pressure_ratio, found.cycle.p_suction_Pa)
     conductances = machine.evaporator.conductance_W_per_K, machine.condenser.conductance_W_per_K
@@ -208,7 +207,7 @@ def run_installed(plant: ExistingPlant, behaviour: Fluid) -> Installed:
         operation=_operation(plant, behaviour, every, factors),
         is_covered=bool(is_covered[0]),
         film_factors=factors,
-        cooling_with_equal_films_W=float(cooling[2]),
+        cooling_with_equal_films_W=float(every.cooling_W[2]),
         conductances_W_per_K=(float(np.asarray(conductances[0])[0]), float(np.asarray(conductances[1])[0])),
         residual=float(found.residual[:2].max()),
     )
@@ -223,11 +222,30 @@ def run_at_condenser_inlet(plant: ExistingPlant, behaviour: Fluid, T_in_K: float
         T_in_K: Temperature of air, water or brine at the inlet of the condenser. [K]
     Raises: NoSolutionError with the reason if the plant does not balance.
     """
+    machine, starts = machine_at(plant, behaviour, np.asarray(plant.machine.evaporator.secondary.T_in_K), T_in_K)
+    return _solved(plant, behaviour, machine, starts)
+
+
+def machine_at(
+    plant: ExistingPlant, behaviour: Fluid, T_evap_in_K: ArrayLike, T_cond_in_K: ArrayLike
+) -> tuple[Machine, tuple[FloatArray, FloatArray]]:
+    """Return the machine with a refrigerant at other temperatures of its media, and where to start its solution.
+
+    Args:
+        plant: The plant as installed.
+        behaviour: The refrigerant.
+        T_evap_in_K: At the inlet of the evaporator. [K]
+        T_cond_in_K: At the inlet of the condenser. [K]
+    Returns: The machine, and evaporating and condensing dew temperature: today's, moved with the media. [K]
+    """
     machine = _with_films(plant.machine, _film_factors(plant.case, behaviour.designation))
-    warmer_K = T_in_K - float(np.asarray(machine.condenser.secondary.T_in_K))
-    secondary = replace(machine.condenser.secondary, T_in_K=T_in_K)
-    hotter = replace(machine, condenser=replace(machine.condenser, secondary=secondary))
-    return _solved(plant, behaviour, hotter, warmer_K=warmer_K)
+    exchangers, starts = [], []
+    for exchanger, T_in, start in zip(
+        (machine.evaporator, machine.condenser), (T_evap_in_K, T_cond_in_K), plant.start_K, strict=True
+    ):
+        starts.append(start + np.asarray(T_in) - np.asarray(exchanger.secondary.T_in_K))
+        exchangers.append(replace(exchanger, secondary=replace(exchanger.secondary, T_in_K=T_in)))
+    return replace(machine, evaporator=exchangers[0], condenser=exchangers[1]), (starts[0], starts[1])
 
 
 def _film_factors(case: Case, designation: str) -> tuple[float, float]:
@@ -260,12 +278,10 @@ def _operation(
 
 
 def _solved(
-    plant: ExistingPlant, behaviour: Fluid, machine: Machine, cooling_W: float | None = None, warmer_K: float = 0.0
+    plant: ExistingPlant, behaviour: Fluid, machine: Machine, starts_K: tuple[FloatArray, FloatArray]
 ) -> Performance[float]:
     """Return what a machine does in one condition, or raise NoSolutionError with the reason."""
-    evaporating, condensing = plant.start_K
-    found = balance(behaviour, machine, evaporating, condensing + warmer_K, cooling_W)
+    found = balance(behaviour, machine, *starts_K)
     if not found.is_solved:
         raise NoSolutionError(f"{behaviour.designation} in the plant as installed: {found.reason}")
-    cooling = found.mass_flow_kg_per_s * found.cycle.refrigerating_effect_J_per_kg
-    return as_numbers(performance(found.cycle, cooling))
+    return as_numbers(balanced(found))

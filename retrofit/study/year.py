@@ -1,0 +1,430 @@
+"""A year of the plant as installed: every hour's weather and load, with each refrigerant, on arrays."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, fields, replace
+from typing import TypeVar
+
+import numpy as np
+from numpy.typing import ArrayLike, NDArray
+
+from retrofit.case import Case, Year
+from retrofit.case.weather import Weather
+from retrofit.cycle import Temperatures, matched_pressures
+from retrofit.equipment.balance import Machine, balance
+from retrofit.equipment.compressor import shaft_and_electric
+from retrofit.errors import NoSolutionError
+from retrofit.properties import Fluid
+from retrofit.study.installed import ExistingPlant, machine_at
+from retrofit.study.operating import balanced, delivered_W, operating
+from retrofit.study.result import FloatArray, Operation, Performance
+
+IntArray = NDArray[np.int64]
+Arrays = TypeVar("Arrays", Performance[FloatArray], Operation[FloatArray])
+HOUR_S = 3600.0
+DAY_H = 24.0
+UNMET_SHARE = 1e-3  # of the load: less is rounding of the plant's own numbers
+AIR_BIN_K = 2.0
+SINKS, SOURCES = 9, 5  # nodes of a map
+SHORTEST_AXIS_K = 20.0  # of a map: a year that hardly varies still shows what a hotter one would do
+EXISTING, SIZED, BY_MAKER = "existing plant", "new plant of today's size", "new plant by its maker's seasonal COP"
+
+
+@dataclass(frozen=True)
+class YearConditions:
+    """What a year asks of the plant; arrays of shape (n,).
+
+    Attributes:
+        source: Where the weather comes from.
+        hours: Hours that each condition stands for. [h]
+        T_air_K: Outdoor air.
+        T_cond_in_K, T_evap_in_K: At the inlets of condenser and evaporator.
+        load_W: Load, with what defrosting adds.
+        month: Month, 1 to 12; None for bins.
+        serves: "cooling" or "heating", what the load is.
+    """
+
+    source: str
+    hours: FloatArray
+    T_air_K: FloatArray
+    T_cond_in_K: FloatArray
+    T_evap_in_K: FloatArray
+    load_W: FloatArray
+    month: IntArray | None
+    serves: str
+
+    @property
+    def load_J(self) -> float:
+        """Return the load of the whole year. [J]"""
+        return float(np.sum(self.load_W * self.hours)) * HOUR_S
+
+
+@dataclass(frozen=True)
+class AirBins:
+    """A year sorted by outdoor temperature; arrays of shape (bins,).
+
+    Attributes:
+        T_air_K: Middle of each bin.
+        hours: Hours in it. [h]
+        energy_J: Electricity used in it.
+        load_J, unmet_J: Load, and what of it stays unmet.
+    """
+
+    T_air_K: FloatArray
+    hours: FloatArray
+    energy_J: FloatArray
+    load_J: FloatArray
+    unmet_J: FloatArray
+
+
+@dataclass(frozen=True)
+class PlantMap:
+    """What the plant does at full over the temperatures at its inlets; NaN where it has no solution.
+
+    Attributes:
+        T_sink_K: At the inlet of the condenser, shape (m,).
+        T_source_K: At the inlet of the evaporator, shape (n,).
+        cooling_W, power_W, cop, T_discharge_K, p_cond_Pa: At full, shape (m, n).
+    """
+
+    T_sink_K: FloatArray
+    T_source_K: FloatArray
+    cooling_W: FloatArray
+    power_W: FloatArray
+    cop: FloatArray
+    T_discharge_K: FloatArray
+    p_cond_Pa: FloatArray
+
+
+@dataclass(frozen=True)
+class YearRun:
+    """A year of the plant with one refrigerant.
+
+    Attributes:
+        machine: Which plant: the existing one, or a new one and how it is reckoned.
+        energy_J: Electricity of the year, all of it.
+        compressor_J, condenser_fans_J, steady_J, defrost_J: Its parts; `steady_J` runs all hours.
+        peak_W: Highest electrical power, as the mean of an hour.
+        delivered_J: What the plant delivers.
+        unmet_J, unmet_h: Load it lacks, and hours in which it lacks some. [J, h]
+        seasonal_cop: Delivered over all electricity.
+        compressor_cop: Delivered over the compressors' electricity.
+        run_time_fraction: Share of the year that the compressors run.
+        not_solved_h: Hours without a solution, counted as unmet; `reason` says why. [h]
+        T_discharge_highest_K, p_cond_highest_Pa: Over the year, at full.
+        monthly_J: Electricity by month, shape (12,); None for bins.
+        by_air: The year sorted by outdoor temperature; None for a plant reckoned by its maker's seasonal COP.
+        map: Over the temperatures at the inlets; None likewise.
+    """
+
+    machine: str
+    energy_J: float
+    compressor_J: float
+    condenser_fans_J: float
+    steady_J: float
+    defrost_J: float
+    peak_W: float | None
+    delivered_J: float
+    unmet_J: float
+    unmet_h: float
+    seasonal_cop: float
+    compressor_cop: float | None
+    run_time_fraction: float | None
+    not_solved_h: float
+    reason: str
+    T_discharge_highest_K: float | None
+    p_cond_highest_Pa: float | None
+    monthly_J: FloatArray | None
+    by_air: AirBins | None
+    map: PlantMap | None
+
+
+# What the year asks
+
+
+def year_conditions(case: Case) -> YearConditions | None:
+    """Return what the year of a case asks of its plant; None if the case has no year.
+
+    Args:
+        case: The case.
+    Source: load between base and peak is linear in the outdoor temperature, constant beyond both; bins know no hour
+        of the day, so that each stands for day and night by their shares.
+    """
+    year, weather = case.year, case.weather
+    if year is None or weather is None or case.evaporator is None or case.condenser is None:
+        return None
+    shares, factors = _day_and_night(year, weather)
+
+    def twice(values: FloatArray) -> FloatArray:
+        return np.tile(values, len(factors))
+
+    T_air = twice(weather.T_dry_bulb_K)
+    factor = np.concatenate([np.broadcast_to(factor, weather.hours.shape) for factor in factors])
+    load = _load_W(case, year, T_air) * factor
+    if year.serves == "cooling":
+        load = load + (year.defrost_power_W or 0.0) * year.defrost_to_load
+    cond_in = _inlet_K(weather, year.condenser_follows, year.condenser_approach_K, case.condenser.inlet_K)
+    evap_in = _inlet_K(weather, year.evaporator_follows, year.evaporator_approach_K, case.evaporator.inlet_K)
+    return YearConditions(
+        source=weather.source,
+        hours=np.concatenate([weather.hours * share for share in shares]),
+        T_air_K=T_air,
+        T_cond_in_K=twice(cond_in),
+        T_evap_in_K=twice(evap_in),
+        load_W=load,
+        month=None if weather.month is None else np.tile(weather.month, len(factors)),
+        serves=year.serves,
+    )
+
+
+def _day_and_night(year: Year, weather: Weather) -> tuple[tuple[float, ...], tuple[ArrayLike, ...]]:
+    """Return shares of the hours and the factors on the load that go with them."""
+    if year.day_from is None or year.day_to is None or year.night_load is None:
+        return (1.0,), (1.0,)
+    length = (year.day_to - year.day_from) % DAY_H or DAY_H
+    if weather.hour_of_day is None:
+        return (length / DAY_H, 1.0 - length / DAY_H), (1.0, year.night_load)
+    # An hour that the day begins or ends within counts by its share.
+    since = (weather.hour_of_day - year.day_from) % DAY_H
+    by_day = np.clip(length - since, 0.0, 1.0) + np.clip(since + 1.0 - DAY_H, 0.0, 1.0)
+    return (1.0,), (by_day + (1.0 - by_day) * year.night_load,)
+
+
+def _load_W(case: Case, year: Year, T_air_K: FloatArray) -> FloatArray:
+    peak = case.duty.cooling_W if year.peak_load_W is None else year.peak_load_W
+    base = peak if year.base_load_W is None else year.base_load_W
+    if year.peak_at_K is None or year.base_at_K is None:
+        return np.full(T_air_K.shape, float(peak))
+    share = np.clip((T_air_K - year.base_at_K) / (year.peak_at_K - year.base_at_K), 0.0, 1.0)
+    return np.asarray(base + share * (peak - base))
+
+
+def _inlet_K(weather: Weather, follows: str, approach_K: float, constant_K: float | None) -> FloatArray:
+    given = {
+        "dry bulb": weather.T_dry_bulb_K,
+        "wet bulb": weather.T_wet_bulb_K,
+        "water": weather.T_water_K,
+        "constant": np.full(weather.hours.shape, np.nan if constant_K is None else constant_K),
+    }[follows]
+    if given is None:
+        raise NoSolutionError(f"the weather of the year has no {follows}; give it, or let the exchanger follow another")
+    return given if follows == "constant" else given + approach_K
+
+
+# What the plant does
+
+
+@dataclass(frozen=True)
+class YearPlant:
+    """A plant with one refrigerant, ready for any hour.
+
+    Attributes:
+        plant: The plant as installed.
+        behaviour: The refrigerant.
+        T_cond_lowest_K: Condensing dew temperature that the head-pressure control holds at least.
+        swept_factor: Swept volume over that of today.
+        machine: Which plant it is, in words.
+    """
+
+    plant: ExistingPlant
+    behaviour: Fluid
+    T_cond_lowest_K: ArrayLike
+    swept_factor: ArrayLike
+    machine: str
+
+    def at(self, T_evap_in_K: ArrayLike, T_cond_in_K: ArrayLike) -> tuple[Machine, tuple[FloatArray, FloatArray]]:
+        """Return the machine at temperatures of its media, and where to start its solution.
+
+        Args:
+            T_evap_in_K: At the inlet of the evaporator. [K]
+            T_cond_in_K: At the inlet of the condenser. [K]
+        """
+        machine, starts = machine_at(self.plant, self.behaviour, T_evap_in_K, T_cond_in_K)
+        swept = np.asarray(machine.swept_volume_m3_per_s) * self.swept_factor
+        lowest = np.asarray(self.T_cond_lowest_K)
+        return (
+            replace(machine, swept_volume_m3_per_s=swept, T_cond_lowest_K=lowest),
+            (starts[0], np.maximum(starts[1], lowest)),
+        )
+
+
+def lowest_condensing_K(case: Case, existing: Fluid) -> float | None:
+    """Return the mean condensing temperature that the head-pressure control holds at least; None for no control.
+
+    Args:
+        case: The case: it gives a temperature for the year, or the pressure set today.
+        existing: The refrigerant in the plant, that such a pressure is set for.
+    """
+    if case.year is not None and case.year.lowest_condensing_K is not None:
+        return case.year.lowest_condensing_K
+    p_Pa = case.controls.head_pressure_Pa if case.controls else None
+    return None if p_Pa is None else 0.5 * float(existing.dew(p_Pa).T_K + existing.bubble(p_Pa).T_K)
+
+
+def year_plant(
+    plant: ExistingPlant, behaviour: Fluid, T_lowest_mean_K: float | None, swept_factor: ArrayLike = 1.0
+) -> YearPlant:
+    """Return the plant with a refrigerant, its head-pressure control set for the same mean condensing temperature.
+
+    Args:
+        plant: The plant as installed.
+        behaviour: The refrigerant.
+        T_lowest_mean_K: Mean condensing temperature held at least; None for no control. [K]
+        swept_factor: Swept volume over that of today; other than 1 for a new plant. [-]
+    Raises: OutsideValidRangeError if the refrigerant has no such condensing temperature.
+    """
+    lowest: ArrayLike = -np.inf
+    if T_lowest_mean_K is not None:
+        # A mean condensing temperature needs an evaporating one beside it, which changes nothing of it.
+        T_evap = max(float(np.nanmean(plant.start_K[0])), behaviour.T_range_K[0] + 1.0)
+        T = Temperatures(min(T_evap, T_lowest_mean_K - 1.0), T_lowest_mean_K, "mean")
+        lowest = behaviour.dew(matched_pressures(behaviour, T, 0.0)[1]).T_K
+    machine = EXISTING if np.all(np.asarray(swept_factor) == 1.0) else SIZED
+    return YearPlant(plant, behaviour, lowest, swept_factor, machine)
+
+
+def run_year(ready: YearPlant, asked: YearConditions) -> YearRun:
+    """Return a year of the plant with a refrigerant, each condition balanced for itself.
+
+    Args:
+        ready: The plant with its refrigerant.
+        asked: What the year asks.
+    Returns: The year; hours without a solution count as unmet.
+    Raises: NoSolutionError if no hour has one.
+    """
+    is_variable = ready.plant.case.compressor.speed == "variable"
+    deciding = [asked.T_evap_in_K, asked.T_cond_in_K, *([asked.load_W] if is_variable else [])]
+    # Hours alike are solved once.
+    alike, back = np.unique(np.stack(deciding), axis=1, return_inverse=True)
+    machine, starts = ready.at(alike[0], alike[1])
+    found = balance(ready.behaviour, machine, *starts)
+    if not np.any(found.is_solved):
+        raise NoSolutionError(f"{ready.behaviour.designation} in the plant as installed: {found.reason[0]}")
+    settled = found.cycle.T_evap_dew_K, found.cycle.T_cond_dew_K
+    starts = tuple(np.where(found.is_solved, T, start) for T, start in zip(settled, starts, strict=True))  # type: ignore[assignment]
+    full, compressor = balanced(found), ready.plant.case.compressor
+    if is_variable:
+        run = operating(ready.behaviour, machine, compressor, full, alike[2], starts, asked.serves)
+        full, run = _spread(full, back), _spread(run, back)
+    else:
+        full = _spread(full, back)
+        run = operating(ready.behaviour, machine, compressor, full, asked.load_W, starts, asked.serves)
+    return _year_of(ready, asked, full, run, found.reason[back])
+
+
+def _spread(found: Arrays, back: IntArray) -> Arrays:
+    """Return what was found for conditions alike, for each of the conditions again."""
+    arrays = {item.name: getattr(found, item.name) for item in fields(found)}
+    return type(found)(**{name: value[back] if np.ndim(value) else value for name, value in arrays.items()})
+
+
+def _year_of(
+    ready: YearPlant,
+    asked: YearConditions,
+    full: Performance[FloatArray],
+    run: Operation[FloatArray],
+    reasons: NDArray[np.str_],
+) -> YearRun:
+    """Add up the hours."""
+    case, hours = ready.plant.case, asked.hours
+    assert case.year is not None
+    is_solved = ~np.isnan(run.mean_power_W)
+    unmet = np.where(is_solved, run.unmet_W, asked.load_W)
+    run_time = np.where(is_solved, run.run_time_fraction, 1.0)
+    power = electric_W(case, np.where(is_solved, run.mean_power_W, 0.0))
+    fans = (case.year.condenser_fans_W or 0.0) * run_time
+    steady = (case.year.evaporator_fans_W or 0.0) + (case.year.pumps_W or 0.0)
+    defrost = case.year.defrost_power_W or 0.0
+    total = power + fans + steady + defrost
+    energy, compressor = (float(np.sum(value * hours)) * HOUR_S for value in (total, power))
+    delivered = float(np.sum((asked.load_W - unmet) * hours)) * HOUR_S
+    return YearRun(
+        machine=ready.machine,
+        energy_J=energy,
+        compressor_J=compressor,
+        condenser_fans_J=float(np.sum(fans * hours)) * HOUR_S,
+        steady_J=steady * float(np.sum(hours)) * HOUR_S,
+        defrost_J=defrost * float(np.sum(hours)) * HOUR_S,
+        peak_W=float(np.max(total)),
+        delivered_J=delivered,
+        unmet_J=float(np.sum(unmet * hours)) * HOUR_S,
+        unmet_h=float(np.sum(hours[unmet > UNMET_SHARE * asked.load_W])),
+        seasonal_cop=delivered / energy,
+        compressor_cop=delivered / compressor,
+        run_time_fraction=float(np.sum(run_time * hours) / np.sum(hours)),
+        not_solved_h=float(np.sum(hours[~is_solved])),
+        reason="; ".join(sorted(set(reasons[~is_solved]) - {""})),
+        T_discharge_highest_K=float(np.nanmax(full.T_discharge_K)),
+        p_cond_highest_Pa=float(np.nanmax(full.p_cond_Pa)),
+        monthly_J=_monthly_J(asked, total),
+        by_air=_by_air(asked, total, unmet),
+        map=plant_map(ready, asked),
+    )
+
+
+def electric_W(case: Case, power_W: FloatArray) -> FloatArray:
+    """Return electrical power of the compressors.
+
+    Args:
+        case: The case; without a motor efficiency its isentropic efficiency counts as that of compressor and motor.
+        power_W: Power by the isentropic efficiency. [W]
+    """
+    motor = case.compressor.motor_efficiency
+    return power_W if motor is None else shaft_and_electric(power_W, motor)[1]
+
+
+def _monthly_J(asked: YearConditions, power_W: FloatArray) -> FloatArray | None:
+    if asked.month is None:
+        return None
+    return np.bincount(asked.month - 1, power_W * asked.hours * HOUR_S, minlength=12).astype(np.float64)
+
+
+def _by_air(asked: YearConditions, power_W: FloatArray, unmet_W: FloatArray) -> AirBins:
+    place = np.floor(asked.T_air_K / AIR_BIN_K).astype(np.int64)
+    first = int(place.min())
+
+    def summed(values: FloatArray) -> FloatArray:
+        return np.bincount(place - first, values * asked.hours).astype(np.float64)
+
+    hours = summed(np.ones_like(asked.hours))
+    middle = ((first + np.arange(hours.size) + 0.5) * AIR_BIN_K).astype(np.float64)
+    energy, load, unmet = (summed(values) * HOUR_S for values in (power_W, asked.load_W, unmet_W))
+    there = hours > 0.0
+    return AirBins(middle[there], hours[there], energy[there], load[there], unmet[there])
+
+
+def plant_map(ready: YearPlant, asked: YearConditions) -> PlantMap:
+    """Return what the plant does at full over the temperatures at its inlets that a year has, and a little beyond.
+
+    Args:
+        ready: The plant with its refrigerant.
+        asked: What the year asks.
+    """
+    sinks = _axis(asked.T_cond_in_K, SINKS)
+    sources = _axis(asked.T_evap_in_K, SOURCES)
+    machine, starts = ready.at(sources[None, :], sinks[:, None])
+    found = balanced(balance(ready.behaviour, machine, *starts))
+    power = electric_W(ready.plant.case, found.power_W)
+    cop = delivered_W(found, asked.serves) / power
+    return PlantMap(sinks, sources, found.cooling_W, power, cop, found.T_discharge_K, found.p_cond_Pa)
+
+
+def _axis(T_K: FloatArray, nodes: int) -> FloatArray:
+    """Return nodes of a map in whole kelvin steps over the temperatures of a year, wider than a short axis."""
+    middle, half = 0.5 * (T_K.max() + T_K.min()), 0.5 * max(float(np.ptp(T_K)), SHORTEST_AXIS_K)
+    return np.linspace(middle - half, middle + half, nodes)
+
+
+def year_by_maker(case: Case, asked: YearConditions, seasonal_cop: float) -> YearRun:
+    """Return a year of a new plant by the seasonal COP that its maker states, fans and pumps included.
+
+    Args:
+        case: The case.
+        asked: What the year asks; a new plant is taken to meet all of it.
+        seasonal_cop: Delivered over all electricity. [-]
+    """
+    load, energy = asked.load_J, asked.load_J / seasonal_cop
+    return YearRun(
+        BY_MAKER, energy, energy, 0.0, 0.0, 0.0, None, load, 0.0, 0.0, seasonal_cop, None, None, 0.0, "", None, None,
+        None, None, None,
+    )  # fmt: skip
