@@ -13,12 +13,12 @@ from retrofit.equipment.oil import changes_needed
 from retrofit.equipment.vessels import co2_equivalent_t, cylinders_needed, vessel_fill
 from retrofit.errors import NoSolutionError, OutsideValidRangeError, RetrofitError
 from retrofit.properties import Fluid, fluid
-from retrofit.study.today import today_of
 from retrofit.study.hardware.numbers import HardwareNumbers
 from retrofit.study.installed import ExistingPlant, run_at_condenser_inlet
 from retrofit.study.practice import practice
 from retrofit.study.result import Comparison, Entry, Performance
 from retrofit.study.saturation import saturation_table
+from retrofit.study.today import today_of
 
 KELVIN = 273.15
 LITRE_M3 = 1e-3
