@@ -4,7 +4,7 @@ Read one with `read_case`; every complaint arrives at once in a `CaseFileError`.
 """
 
 from retrofit.case.compressor import Compressor, Polynomial
-from retrofit.case.emissions import Emissions, GridYear, TopUp
+from retrofit.case.emissions import EDITIONS, Emissions, GridYear, TopUp
 from retrofit.case.exchangers import Condenser, Evaporator, Exchanger
 from retrofit.case.keys import meaning, quantity
 from retrofit.case.law import EQUIPMENT, Law
@@ -25,6 +25,7 @@ from retrofit.case.thresholds import Threshold, Thresholds
 from retrofit.case.year import Bin, Climate, Year
 
 __all__ = [
+    "EDITIONS",
     "EQUIPMENT",
     "SCHEMA_FILE",
     "Bin",

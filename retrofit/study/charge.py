@@ -1,4 +1,4 @@
-"""The charge of the largest independent circuit with another refrigerant: what one leak can let out."""
+"""The charge with another refrigerant: of the largest independent circuit, and of the whole plant."""
 
 from __future__ import annotations
 
@@ -7,6 +7,8 @@ from dataclasses import dataclass
 from retrofit.case import Case
 from retrofit.equipment.vessels import charge_estimate
 from retrofit.study.result import Entry
+
+_PLANT = "whole plant"
 
 
 @dataclass(frozen=True)
@@ -36,9 +38,32 @@ def circuit_charge(case: Case, entry: Entry, existing: Entry) -> CircuitCharge:
     Source: the same volume of liquid, m_new = m_old rho_new / rho_old (`charge_estimate`).
     """
     circuit = case.room.largest_circuit_kg if case.room else None
-    today, of = (case.plant.charge_kg, "whole plant") if circuit is None else (circuit, "largest circuit")
+    today, of = (case.plant.charge_kg, _PLANT) if circuit is None else (circuit, "largest circuit")
     if today is None:
         return CircuitCharge(None, None, None, "", "`largest_circuit` in [room], or `charge` in [plant]")
+    return _with(entry, existing, today, of)
+
+
+def plant_charge(case: Case, entry: Entry, existing: Entry) -> CircuitCharge:
+    """Return the charge of the whole plant with an option.
+
+    Args:
+        case: The case.
+        entry: The option.
+        existing: The refrigerant in the plant.
+    Returns: The charge that the option gives; else today's; else an estimate from today's.
+    Source: the same volume of liquid, m_new = m_old rho_new / rho_old (`charge_estimate`).
+    """
+    option = case.options.by_refrigerant.get(entry.refrigerant.designation) if case.options else None
+    if option and option.charge_kg is not None:
+        return CircuitCharge(option.charge_kg, option.charge_kg, option.charge_kg, _PLANT)
+    if case.plant.charge_kg is None:
+        return CircuitCharge(None, None, None, "", "`charge` in [plant]")
+    return _with(entry, existing, case.plant.charge_kg, _PLANT)
+
+
+def _with(entry: Entry, existing: Entry, today: float, of: str) -> CircuitCharge:
+    """Return the charge that takes the place of today's."""
     if entry.refrigerant.designation == existing.refrigerant.designation:
         return CircuitCharge(today, today, today, of)
     numbers = entry.hardware_numbers
