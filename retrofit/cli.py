@@ -22,6 +22,7 @@ from retrofit import __version__
 from retrofit.errors import CaseFileError, RetrofitError
 
 if TYPE_CHECKING:
+    from retrofit.report.carried import Carried
     from retrofit.study import Comparison
 
 EPILOG = (
@@ -150,6 +151,7 @@ def main() -> None:
     retrofit new plant.toml         start a case file
     retrofit compare plant.toml     compare the candidates in the terminal
     retrofit report plant.toml      write the report as one HTML file
+    retrofit rerun plant.html       compute a report again
     """
 
 
@@ -229,6 +231,43 @@ def report(case_file: Path, output: Path | None, units: str, templates: Path | N
     path = output or Path(f"{case_file.stem}.html")
     write_report(path, html)
     click.echo(f"Wrote {path}. Open it in a browser; print it from there for paper or PDF.")
+
+
+@main.command(epilog="Exit status: 0 nothing differs; 1 something differs, or the file cannot be used; 2 wrong usage.")
+@click.argument("report_file", type=CASE, metavar="REPORT")
+@json_option
+@click.option("--case", "case_file", type=CASE, metavar="FILE", help="Write the case of the REPORT to FILE instead.")
+@click.option("--force", is_flag=True, help="Overwrite the FILE of --case if it is there.")
+@_guarded
+def rerun(report_file: Path, as_json: bool, case_file: Path | None, force: bool) -> None:
+    """Compute the case that an HTML REPORT carries again, and say whether anything differs and why."""
+    from retrofit.report import carried
+
+    kept = carried.read_carried(report_file)
+    if case_file:
+        _write_case(kept, case_file, force)
+        return
+    found = carried.rerun(kept, _say_build)
+    if as_json:
+        _print_json(carried.rerun_json(found))
+    else:
+        click.echo(carried.rerun_text(found, _columns(), _strong()))
+    sys.exit(1 if found.differs else 0)
+
+
+def _write_case(kept: Carried, case_file: Path, force: bool) -> None:
+    from retrofit.report.files import write_whole
+    from retrofit.units import shown
+
+    if case_file.exists() and not force:
+        _fail(f"{case_file} is there already; choose another name or add --force", 1)
+    write_whole(case_file, kept.case_text)
+    click.echo(f"Wrote {case_file}, the case of {kept.name}.")
+    if "case" in kept.altered:
+        click.echo("It was edited in the report: its digest does not fit.", err=True)
+    if kept.files:
+        names = ", ".join(shown(name) for name in kept.files)
+        click.echo(f"The report was made with {names} beside its case; computing it again uses them.", err=True)
 
 
 @main.command()

@@ -14,7 +14,7 @@ if TYPE_CHECKING:
 def render_html(
     comparison: Comparison, units: str = "si", template_folder: Path | None = None, *, made_at: datetime
 ) -> str:
-    """Return the report of a comparison as one HTML page that loads nothing.
+    """Return the report of a comparison as one HTML page that loads nothing and carries its case and result.
 
     Args:
         comparison: An assessed result.
@@ -25,6 +25,7 @@ def render_html(
     Raises: ReportError if a template of the reader fails, or leaves out or hides a caution.
     """
     # The command line imports this room for its other parts too: what is slow waits until it is needed.
+    from retrofit.report.carried import with_block
     from retrofit.report.guard import check_page
     from retrofit.report.page import build_page
     from retrofit.report.templates import render_cautions, render_page
@@ -32,7 +33,7 @@ def render_html(
 
     page = build_page(comparison, UNIT_SYSTEMS[units], made_at)
     cautions = render_cautions(page)
-    html = render_page(page, cautions, template_folder)
+    html = with_block(render_page(page, cautions, template_folder), comparison, units, made_at)
     check_page(html, page, cautions)
     return html
 
