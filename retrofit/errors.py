@@ -35,27 +35,32 @@ class RetrofitError(Exception):
 
 @dataclass(frozen=True)
 class Problem:
-    """One thing wrong in a case file: where it stands, which key, and what to do."""
+    """One thing wrong in a case file, or in a file it names: where it stands, which key, and what to do.
+
+    `path` is the file named by the case; empty if the problem stands in the case file itself.
+    """
 
     line: int
     key: str
     text: str
+    path: str = ""
 
     def located(self, path: str) -> str:
-        """Return the problem as `file:line: key: text`, the form editors make clickable."""
-        where = f"{path}:{self.line}: " if self.line else f"{path}: "
+        """Return the problem as `file:line: key: text`, the form editors make clickable; `path` is the case file."""
+        file = self.path or path
+        where = f"{file}:{self.line}: " if self.line else f"{file}: "
         return where + (f"{self.key}: " if self.key else "") + self.text
 
 
 class CaseFileError(RetrofitError):
-    """The case file cannot be used."""
+    """The case file, or a file it names, cannot be used; problems are in the order of files and lines."""
 
     slug = "case-file"
     exit_code = 2
 
     def __init__(self, path: str, problems: Sequence[Problem]) -> None:
         self.path = path
-        self.problems = tuple(sorted(problems, key=lambda problem: problem.line))
+        self.problems = tuple(sorted(problems, key=lambda problem: (problem.path, problem.line)))
         super().__init__("\n".join(problem.located(path) for problem in self.problems))
 
 

@@ -6,12 +6,14 @@ are passed over: they have a complaint of their own.
 
 from __future__ import annotations
 
+import datetime
 import math
 import re
 from collections.abc import Iterator
 
 from retrofit.case.positions import KeyPath
-from retrofit.case.rules import GIVEN_ONCE, NEEDS, NOT_BOTH, ORDERS, RISING, Order
+from retrofit.case.rules import DIFFER, GIVEN_ONCE, NEEDS, NOT_BOTH, ORDERS, RISING, Order
+from retrofit.case.whole_year import problems_of_options, problems_of_year
 from retrofit.case.written import Written, path_of
 from retrofit.units import SI, listed, quoted
 
@@ -33,6 +35,8 @@ def problems_between_keys(written: Written) -> Complaints:
         yield from _out_of_order(written, order)
     for key in RISING:
         yield from _not_rising(written, key)
+    for key, other, why in DIFFER:
+        yield from _the_same(written, key, other, why)
     yield from _given_twice_or_not(written)
     yield from _needed(written)
     for way in ("evaporator", "condenser"):
@@ -47,6 +51,8 @@ def problems_between_keys(written: Written) -> Complaints:
     yield from _repeated(written, "compare.candidates", written.value("plant.refrigerant"))
     yield from _chosen(written)
     yield from _thresholds(written)
+    yield from problems_of_year(written)
+    yield from problems_of_options(written)
 
 
 def _short(key: str, beside: str) -> str:
@@ -78,7 +84,17 @@ def _not_rising(written: Written, key: str) -> Complaints:
             before, here = before[0], here[0]
         if before is not None and here is not None and before >= here:
             texts = (quoted(str(raw[place])) for place in (index, index - 1))
-            yield (*path_of(key), index), f"{next(texts)} is not above the one before, {next(texts)}; the list rises"
+            relation = "after" if isinstance(here, datetime.date) else "above"
+            yield (
+                (*path_of(key), index),
+                f"{next(texts)} is not {relation} the one before, {next(texts)}; the list rises",
+            )
+
+
+def _the_same(written: Written, key: str, other: str, why: str) -> Complaints:
+    value = written.value(key)
+    if value is not None and value == written.value(other):
+        yield path_of(key), f"{quoted(str(written.raw(key)))} is {_short(other, key)} too; {why}: make them differ"
 
 
 def _given_twice_or_not(written: Written) -> Complaints:

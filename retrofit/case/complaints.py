@@ -6,6 +6,7 @@ from pydantic.fields import FieldInfo
 from pydantic_core import ErrorDetails
 
 from retrofit.case.model import FIELDS, TABLES, CaseFile
+from retrofit.case.money import Option
 from retrofit.case.positions import KeyPath
 from retrofit.case.table import Items, Table
 from retrofit.case.thresholds import Threshold
@@ -38,7 +39,7 @@ def _name(where: KeyPath) -> str:
 def _table_at(where: KeyPath) -> type[Table]:
     if not where:
         return CaseFile
-    return TABLES.get(_name(where), Threshold)
+    return TABLES.get(_name(where), Option if where[0] == "options" else Threshold)
 
 
 def _missing(where: KeyPath) -> str:

@@ -9,6 +9,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
+from dataclasses import field as a_field
 from typing import TYPE_CHECKING, Annotated, get_args
 
 from pydantic import Field
@@ -108,6 +109,7 @@ class Case:
     `given` maps each key of the file ("duty.cooling") to the text written there; `defaults` are the
     values taken for keys left out; `path` is the file as named by the user and `text` its content.
     Tables from `readings` on are None when the file has none; `weather` is None without a year.
+    `widths` holds half the width of each input under `plus_minus`, in SI, by its full key.
     """
 
     title: str
@@ -138,3 +140,4 @@ class Case:
     options: Options | None = None
     plus_minus: PlusMinus | None = None
     weather: Weather | None = None
+    widths: Mapping[str, float] = a_field(default_factory=dict)

@@ -7,6 +7,7 @@ from typing import Any
 
 from pydantic import ConfigDict
 
+from retrofit.case.positions import KeyPath
 from retrofit.case.table import Table
 
 
@@ -19,12 +20,20 @@ class PlusMinus(Table):
     @property
     def by_key(self) -> Mapping[str, object]:
         """What is written for each full key, such as "duty.evaporating", unread."""
-        return dict(_flat(self.__pydantic_extra__))
+        return {key: raw for key, _, raw in widths_written(self.__pydantic_extra__)}
 
 
-def _flat(node: Mapping[str, Any], above: str = "") -> Iterator[tuple[str, object]]:
-    for name, value in node.items():
+def widths_written(table: Mapping[str, Any], above: KeyPath = ("plus_minus",)) -> Iterator[tuple[str, KeyPath, object]]:
+    """Yield what a table of plus and minus holds, whether its keys are quoted, dotted or in tables of their own.
+
+    Args:
+        table: The table as parsed. [-]
+        above: Its path in the file. [-]
+    Returns: Full key, its path in the file, and what is written there, unread. [-]
+    """
+    for name, value in table.items():
+        path = (*above, name)
         if isinstance(value, Mapping):
-            yield from _flat(value, f"{above}{name}.")
+            yield from widths_written(value, path)
         else:
-            yield f"{above}{name}", value
+            yield ".".join(map(str, path[1:])), path, value

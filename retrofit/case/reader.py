@@ -2,18 +2,21 @@
 
 The bytes become text, the text TOML (`retrofit.case.source`), the TOML a model (here). A fault in an
 early step hides the later ones; within the model every fault is found, by itself
-(`retrofit.case.complaints`) and between keys (`retrofit.case.between`). Each carries the line of its key.
+(`retrofit.case.complaints`), between keys (`retrofit.case.between`), in a plus or minus (`retrofit.case.widths`)
+and in the weather beside the case (`retrofit.case.beside`). Each carries the line of its key.
 """
 
 from __future__ import annotations
 
 import os
 from collections.abc import Iterator, Mapping
+from dataclasses import replace
 from pathlib import Path
-from typing import TYPE_CHECKING, Any
+from typing import Any
 
 from pydantic import ValidationError
 
+from retrofit.case.beside import Outdoors, weather_of
 from retrofit.case.between import problems_between_keys
 from retrofit.case.complaints import complaint
 from retrofit.case.exchangers import MEDIUM_HEATS
@@ -21,12 +24,10 @@ from retrofit.case.model import FIELDS, TABLES, Case, CaseFile, Default
 from retrofit.case.positions import KeyPath
 from retrofit.case.source import parsed, text_of
 from retrofit.case.table import Table, WhyDefault
+from retrofit.case.widths import problems_of_widths, widths
 from retrofit.case.written import Written, path_of
 from retrofit.errors import CaseFileError, Problem
 from retrofit.units import listed, shown
-
-if TYPE_CHECKING:
-    from retrofit.case.weather import Weather
 
 LONGEST_GIVEN = 1000  # characters
 LONGEST_PATH = 4096  # characters
@@ -46,21 +47,26 @@ def read_case(path: str | os.PathLike[str]) -> Case:
     written = Written(data)
     heats = tuple(_medium_heats(written))
     context = {"p_ambient_Pa": written.p_ambient_Pa, "folder": Path(path).parent}
-    problems = list(problems_between_keys(written))
+    outdoors = Outdoors(written, os.fspath(path))
+    problems = [*problems_between_keys(written), *problems_of_widths(written), *outdoors.complaints]
     try:
         model = CaseFile.model_validate(_completed(data, heats), context=context)
     except ValidationError as error:
         problems += [(tuple(found["loc"]), complaint(found)) for found in error.errors(include_url=False)]
         model = None
-    if problems or model is None:
-        raise CaseFileError(name, [_located(where, text, lines) for where, text in problems])
-    return _case(model, data, name, text, (*_defaults(model), *heats))
+    if problems or outdoors.problems or model is None:
+        raise CaseFileError(name, [*(_located(where, text, lines) for where, text in problems), *outdoors.problems])
+    defaults = (*_defaults(model), *heats)
+    return replace(
+        _case(model, data, name, text, defaults),
+        weather=outdoors.weather or weather_of(model.year),
+        widths=widths(written),
+    )
 
 
 def _case(model: CaseFile, data: Mapping[str, Any], name: str, text: str, defaults: tuple[Default, ...]) -> Case:
     tables = {table: getattr(model, table) for table in TABLES if "." not in table}
     return Case(
-        weather=_weather(model),
         title=model.title or Path(name).stem,
         about=model.about,
         path=name,
@@ -69,17 +75,6 @@ def _case(model: CaseFile, data: Mapping[str, Any], name: str, text: str, defaul
         defaults=defaults,
         **tables,
     )
-
-
-def _weather(model: CaseFile) -> Weather | None:
-    """Return the weather of the case's year; a file beside the case is still to be read."""
-    if model.year is None:
-        return None
-    from retrofit.case.weather import weather_of_bins, weather_of_climate  # needs numpy, which takes a while to load
-
-    if model.year.climate is not None:
-        return weather_of_climate(model.year.climate)
-    return weather_of_bins(model.year.bins) if model.year.bins else None
 
 
 # What was written, and what was assumed

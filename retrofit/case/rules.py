@@ -43,6 +43,7 @@ ORDERS = (
     Order("controls.head_pressure", "below", "controls.high_pressure_cut_out", _SWITCHES),
     Order("plant.relief_setting", "above", "controls.high_pressure_cut_out", _SWITCHES),
     Order("room.largest_circuit", "at most", "plant.charge", "no circuit holds more than the whole plant"),
+    Order("year.base_load", "at most", "year.peak_load", "the peak is the larger of the two"),
     Order("law.end", "above", "law.date_of_change", "the plant runs on after the change"),
     *(
         Order(f"lines.{line}.riser", "at most", f"lines.{line}.length", "the riser is a part of the line")
@@ -50,11 +51,19 @@ ORDERS = (
     ),
 )
 
+# Keys that may not have the same value, and why.
+DIFFER = (
+    ("year.peak_at", "year.base_at", "the load changes between the two"),
+    ("year.day_from", "year.day_to", "a day that begins as it ends has no night"),
+)
+
 RISING = (
     "compressor.efficiency_points",
     "compressor.polynomial.evaporating",
     "compressor.polynomial.condensing",
     "controls.fan_steps",
+    "emissions.leak_log",
+    "emissions.grid_years",
 )
 
 # Exactly one of the two, if their table is there.
@@ -76,6 +85,7 @@ NOT_BOTH = (
     ("compressor.polynomial", "compressor.efficiency_points", _MAKERS),
     ("room.mounting_height", "room.mounting", "the height says where the unit is; leave one of the two out"),
     ("law.end", "law.remaining_life", "the end says how long the plant runs; leave one of the two out"),
+    ("emissions.leak_log", "emissions.leak_rate", "the log gives the rate; leave one of the two out"),
     *(
         (f"{way}.outlet", f"{way}.{key}", _OUTLET)
         for way in ("evaporator", "condenser")
@@ -86,6 +96,10 @@ NOT_BOTH = (
 _INLET = "the inlet is missing"
 _MEETING = 'how the streams meet is not given ("crossflow" is usual for air, "counterflow" for plates)'
 _FLOW = "a specific heat goes with a flow"
+_LOAD_LINE = "a load that follows the weather needs a peak temperature, a base temperature and a base load"
+_LOAD_KEYS = ("peak_at", "base_load", "base_at")
+_DAY = "a load by day and by night needs both hours and the share of the night"
+_DAY_KEYS = ("day_from", "day_to", "night_load")
 # A key, what has to stand beside it, and why.
 NEEDS = (
     (
@@ -97,6 +111,11 @@ NEEDS = (
         "compressor.polynomial.capacity",
         ("compressor.polynomial.subcooling",),
         "a capacity gives no mass flow without the subcooling it is rated at",
+    ),
+    *(
+        (f"year.{name}", tuple(f"year.{other}" for other in names if other != name), why)
+        for names, why in ((_LOAD_KEYS, _LOAD_LINE), (_DAY_KEYS, _DAY))
+        for name in names
     ),
     *(
         need

@@ -6,6 +6,7 @@ import os
 import re
 import stat
 import tomllib
+from dataclasses import dataclass
 from typing import Any
 
 from retrofit.case.positions import KeyPath, key_lines
@@ -15,19 +16,38 @@ from retrofit.units import shown
 LARGEST_FILE_BYTES = 1_000_000
 
 
-def text_of(path: str, name: str) -> str:
+@dataclass(frozen=True)
+class FileKind:
+    """A kind of file, for complaints about it: what it is called, its largest size [B], and what to do."""
+
+    name: str
+    largest_bytes: int
+    if_absent: str
+    if_too_large: str
+
+
+CASE_FILE = FileKind(
+    "a case file",
+    LARGEST_FILE_BYTES,
+    "check the path, or start one with `retrofit new`",
+    "a case file has some dozens of lines",
+)
+
+
+def text_of(path: str, name: str, kind: FileKind = CASE_FILE) -> str:
     """Return the text of a file.
 
     Args:
         path: The file. [-]
         name: Its name as complaints show it. [-]
+        kind: What kind of file it should be.
     Returns: The text without a byte order mark. [-]
-    Raises: CaseFileError if it is no ordinary file of at most 1 MB in UTF-8 that may be read.
+    Raises: CaseFileError if it is no ordinary file of at most the size of its kind in UTF-8 that may be read.
     """
     try:
-        raw = _bytes_of(path, name)
+        raw = _bytes_of(path, name, kind)
     except FileNotFoundError:
-        raise _whole_file(name, "there is no such file; check the path, or start one with `retrofit new`") from None
+        raise _whole_file(name, f"there is no such file; {kind.if_absent}") from None
     except PermissionError:
         raise _whole_file(name, "it may not be read; check its permissions") from None
     except (OSError, ValueError) as error:
@@ -41,16 +61,16 @@ def text_of(path: str, name: str) -> str:
         raise CaseFileError(name, [Problem(line, "", message)]) from None
 
 
-def _bytes_of(path: str, name: str) -> bytes:
+def _bytes_of(path: str, name: str, kind: FileKind) -> bytes:
     mode = os.stat(path).st_mode
     if stat.S_ISDIR(mode):
-        raise _whole_file(name, "this is a folder; name the case file in it")
+        raise _whole_file(name, f"this is a folder; name {kind.name} in it")
     if not stat.S_ISREG(mode):
-        raise _whole_file(name, "this is not an ordinary file; name a case file")
+        raise _whole_file(name, f"this is not an ordinary file; name {kind.name}")
     with open(path, "rb") as file:
-        raw = file.read(LARGEST_FILE_BYTES + 1)
-    if len(raw) > LARGEST_FILE_BYTES:
-        raise _whole_file(name, "the file is larger than 1 MB; a case file has some dozens of lines")
+        raw = file.read(kind.largest_bytes + 1)
+    if len(raw) > kind.largest_bytes:
+        raise _whole_file(name, f"the file is larger than {kind.largest_bytes / 1e6:g} MB; {kind.if_too_large}")
     return raw
 
 

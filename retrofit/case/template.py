@@ -208,6 +208,85 @@ match = "mean"                   # refrigerants are compared at equal mean (or d
 # fallback = "R449A"
 # conditions = ["The cases are cleaned before the change."]   # your own, after those that were found
 
+# [year]                         # it needs [evaporator] and [condenser]: the plant as installed runs through it
+# bins = [["2 degC", 4000], ["12 degC", 4000], ["24 degC", 760]]   # outdoor air and its hours, 8760 in all
+#| weather = "hours.csv"         # or a file beside this one with 8760 rows below the heading
+#|                                 hour,dry_bulb [degC] and, if needed, wet_bulb [degC] or water [degC]
+# condenser_follows = "dry bulb"   # what its inlet follows: constant, dry bulb, wet bulb or water
+# condenser_approach = "0 K"     # inlet above that
+# evaporator_follows = "constant"
+# evaporator_approach = "0 K"
+# serves = "cooling"             # the load is cooling, or heating: heat from the condenser
+# peak_load = "50 kW"            # from peak_at on; the duty if left out
+# peak_at = "30 degC"            # outdoor air; between the two the load runs on a straight line
+# base_load = "25 kW"
+# base_at = "5 degC"
+# day_from = 7                   # hours of the day with the whole load
+# day_to = 21
+# night_load = "70 %"            # share of it at other hours
+# defrost_power = "2 kW"         # mean over the year
+# defrost_to_load = "100 %"      # share of that heat to be cooled away again
+# evaporator_fans = "1.5 kW"     # or pumps; all hours
+# condenser_fans = "2 kW"        # or pumps; with the compressors
+# pumps = "0.5 kW"               # and other auxiliaries; all hours
+# lowest_condensing = "25 degC"   # mean temperature that the head-pressure control keeps
+# metered = "140000 kWh"         # electricity of a year, to set beside the computed one
+
+# An invented climate, instead of bins or a file:
+#| [year.climate]
+#| mean = "11 degC"              # of the year
+#| yearly_swing = "8 K"          # warmest day's mean above that
+#| daily_swing = "4 K"           # warmest hour above the mean of its day
+#| warmest_day = 200             # of the year; 20 in the south
+
+# [emissions]
+# gwp_edition = "AR5"            # AR4, AR5 or AR6: whose GWP over 100 years counts
+# leak_log = [["2025-03-02", "18 kg"], ["2026-03-01", "20 kg"]]   # top-ups; the first begins the count
+#| leak_rate = "15 %"            # or the share of the charge lost in a year
+# leak_rate_after = "10 %"       # with any candidate; as today if left out
+# recovery_at_end = "85 %"       # of the charge, when the plant is taken out of use
+# lost_at_change = "5 %"         # of the old charge
+# old_charge = "recovered"       # or released
+# grid_factor = "0.35 kg/kWh"    # CO2 equivalent of electricity
+# grid_years = [[2027, "0.30 kg/kWh"], [2032, "0.20 kg/kWh"]]   # from each year on
+# grid_source = "where the factor comes from"
+
+# [money]                        # one number, or [low, base, high]; nothing is converted
+# currency = "EUR"               # as it is to be printed
+# tariff = 0.18                  # a kWh
+# demand_charge = 60             # a year, for each kW of peak power
+# discount_rate = "6 %"
+# refrigerant_price = {{R448A = [25, 30, 45], R404A = 90}}   # a kilogram
+# leak_check = 250               # one check
+# levy = 0                       # for each tonne of CO2 equivalent of refrigerant bought
+# yearly_service = 2000          # the same for every option
+
+# [money.change]                 # first cost of any change; what is left out is not counted
+# recovery = 1500                # of the old charge, weighing and disposal
+# refrigerant = 3000             # or left out: charge times price
+# reclaim_credit = 0             # what the old charge brings
+# oil = 800
+# driers = 400
+# valves = [1000, 1500, 3000]
+# seals = 500
+# relief = 300
+# controls = 600
+# labour = [4000, 6000, 9000]
+# downtime = 1000
+# safety_works = 0
+# new_plant = 0
+# contingency = "10 %"
+
+# [options.R454C]                # where one option differs: keys of [money.change] and these
+# leak_rate = "2 %"
+# charge = "40 kg"
+# seasonal_cop = 3.1             # of a new plant, fans and pumps included
+
+# [plus_minus]                   # how far inputs may be off, each under its full key
+# duty.evaporating = "1 K"
+# duty.cooling = "10 %"          # of its value
+# compressor.isentropic_efficiency = 0.05   # of a fraction: points of its own, here 0.65 to 0.75
+
 # [thresholds]                   # your own, instead of those that the checks come with
 # capacity = {{work = 1.0, stop = 0.9}}
 """

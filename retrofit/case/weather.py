@@ -16,7 +16,7 @@ DAYS_OF_MONTHS = (31, 28, 31, 30, 31, 30, 31, 31, 30, 31, 30, 31)
 WARMEST_HOUR = 15.0  # of an invented day
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class Weather:
     """Outdoor conditions of a year, each standing for some of its hours; all arrays have the shape (n,).
 
@@ -38,6 +38,17 @@ class Weather:
     hour_of_day: FloatArray | None = None
     month: IntArray | None = None
     text: str = ""
+
+    def __eq__(self, other: object) -> bool:
+        """Say whether another weather is the same, number by number."""
+        if not isinstance(other, Weather):
+            return NotImplemented
+        pairs = zip(vars(self).values(), vars(other).values(), strict=True)
+        return all(
+            np.array_equal(mine, others) if isinstance(mine, np.ndarray) else mine == others for mine, others in pairs
+        )
+
+    __hash__ = None  # type: ignore[assignment]
 
 
 def weather_of_bins(bins: Sequence[Bin]) -> Weather:
@@ -64,10 +75,32 @@ def weather_of_climate(climate: Climate) -> Weather:
     return Weather("an invented climate", *_hourly(T))
 
 
+def weather_of_hours(
+    source: str,
+    text: str,
+    T_dry_bulb_K: Sequence[float],
+    T_wet_bulb_K: Sequence[float] | None = None,
+    T_water_K: Sequence[float] | None = None,
+) -> Weather:
+    """Return the weather of 8760 hours that a file gives.
+
+    Args:
+        source: The file, for a reader. [-]
+        text: The file as read. [-]
+        T_dry_bulb_K: Temperature of the outdoor air, hour by hour. [K]
+        T_wet_bulb_K: Wet bulb, if the file has it. [K]
+        T_water_K: Water that a condenser or evaporator draws, if the file has it. [K]
+    """
+    wet_K, water_K = (None if T is None else np.array(T, dtype=float) for T in (T_wet_bulb_K, T_water_K))
+    hour_of_day, month = hours_of_year()
+    dry_K = np.array(T_dry_bulb_K, dtype=float)
+    return Weather(source, np.ones(HOURS_OF_A_YEAR), dry_K, wet_K, water_K, hour_of_day, month, text)
+
+
 def hours_of_year() -> tuple[FloatArray, IntArray]:
     """Return the hour of the day and the month of each of 8760 hours, beginning on 1 January at 0 h."""
-    month = np.repeat(np.arange(1, 13), np.array(DAYS_OF_MONTHS) * 24)
-    return np.arange(HOURS_OF_A_YEAR) % 24.0, month
+    month = np.repeat(np.arange(1, 13, dtype=np.int64), np.array(DAYS_OF_MONTHS) * 24)
+    return np.arange(HOURS_OF_A_YEAR, dtype=float) % 24.0, month
 
 
 def _hourly(T: FloatArray) -> tuple[FloatArray, FloatArray, None, None, FloatArray, IntArray]:

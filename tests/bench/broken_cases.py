@@ -81,6 +81,16 @@ ODD_VALUES = (
     '"0.3 bar"',
     '"4.19 kJ/(kg K)"',
     '"92 A"',
+    "[900, 1200, 1800]",
+    "[3, 2, 1]",
+    '[["2 degC", 4000], ["2 degC", 4760]]',
+    '[["2026-03-01", "18 kg"], ["2025-03-01", "20 kg"]]',
+    '[[2027, "0.3 kg/kWh"], [2026]]',
+    "{R448A = 30, R-448A = [1, 2]}",
+    '"hours.csv"',
+    '"../hours.csv"',
+    '"wet bulb"',
+    '"10 %"',
 )
 
 
@@ -195,6 +205,13 @@ def odd_structure(data: bytes, draw: random.Random) -> bytes:
         "[thresholds.a.b]",
         "evaporator.inlet = '2 degC'",
         '[thresholds]\n"\\u001b" = {}',
+        "[year]",
+        "[year.climate]",
+        "[options]\nR404A = 5",
+        "[options.R99]",
+        "[options.r-404a]\nleak_rate = '5 %'",
+        "[plus_minus]\nplant = '1 K'",
+        "[plus_minus.duty.evaporating]",
     )
     lines = data.split(b"\n")
     lines.insert(draw.randrange(len(lines)), draw.choice(odd).encode())
@@ -272,7 +289,7 @@ def command_outcome(path: Path) -> str:
 def full_case() -> bytes:
     """Return the starting case with its remarks taken in: it has nearly every table and key."""
     lines = new_case_text().splitlines()
-    is_key = re.compile(r"# (\[|\w+ = )")
+    is_key = re.compile(r"# (\[|[\w.]+ = )")
     return "\n".join(line.removeprefix("# ") if is_key.match(line) else line for line in lines).encode()
 
 

@@ -246,7 +246,9 @@ def test_a_new_case_reads_as_it_stands(tmp_path):
 def opened(text, mark="# "):
     """Return a starting case with its remarks taken in: those that are keys or tables and begin with a mark."""
     return "\n".join(
-        line.removeprefix(mark) if line.startswith(mark) and re.match(r"\[|\w+ = ", line.removeprefix(mark)) else line
+        line.removeprefix(mark)
+        if line.startswith(mark) and re.match(r"\[|[\w.]+ = ", line.removeprefix(mark))
+        else line
         for line in text.splitlines()
     )
 
@@ -276,6 +278,10 @@ def test_a_new_case_reads_with_the_other_ways_taken_in(tmp_path):
         "#| return_gas",
         "# outlet",
         "# remaining_life",
+        "# bins",
+        "#| weather",
+        "# leak_log",
+        "# compressor.isentropic_efficiency",
         "# mounting = ",
     )
     for other in without:
@@ -291,6 +297,8 @@ def test_a_new_case_reads_with_the_other_ways_taken_in(tmp_path):
     assert case.compressor.steps == 4
     assert case.evaporator.flow_kg_per_s == 8.0
     assert (case.room.mounting, case.room.mounting_height_m) == (None, 2.5)
+    assert case.year.climate.warmest_day == 200
+    assert case.emissions.leak_rate == pytest.approx(0.15)
 
 
 def test_a_new_case_mentions_every_key():
@@ -300,4 +308,4 @@ def test_a_new_case_mentions_every_key():
     tables = set(re.findall(r"^(?:# |#\| )?\[([\w.]+)\]", text, re.MULTILINE))
 
     assert {key.rpartition(".")[2] for key in FIELDS} <= keys
-    assert tables == set(TABLES) - {"lines"}
+    assert tables == {*TABLES, "options.R454C"} - {"lines", "options"}

@@ -1,0 +1,159 @@
+"""How far inputs may be off, as numbers: half the width of each, in the unit of its key.
+
+A temperature takes a difference ("1 K"), a pressure a difference without a or g ("0.2 bar"). A fraction takes
+points of its own ("0.05" or "5 %" of 0.70 is 0.65 to 0.75); of any other quantity "10 %" is a share of its value.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Mapping
+
+from retrofit.case.model import FIELDS
+from retrofit.case.money import PricesValue, RangeValue
+from retrofit.case.numbers import Number
+from retrofit.case.plus_minus import widths_written
+from retrofit.case.positions import KeyPath
+from retrofit.case.rules import ORDERS, Order
+from retrofit.case.table import WhyDefault
+from retrofit.case.values import AbsolutePressure, FileValue, Quantity
+from retrofit.case.written import Written
+from retrofit.errors import QuantityError
+from retrofit.units import close_to, parse_pressure, parse_quantity, quoted, shown
+
+_DIFFERENCES = {"temperature": "temperature difference", "pressure": "pressure difference"}
+_ROUNDING = 1e-9
+
+
+def widths(written: Written) -> Mapping[str, float]:
+    """Return half the width of each input that has a plus or minus.
+
+    Args:
+        written: A file without faults.
+    Returns: Half widths by full key, such as "duty.evaporating". [SI unit of the key]
+    """
+    return {key: _width(written, key, raw) for key, _, raw in _pairs(written)}
+
+
+def problems_of_widths(written: Written) -> Iterator[tuple[KeyPath, str]]:
+    """Yield every fault of the table of plus and minus.
+
+    Args:
+        written: The file.
+    Returns: Path of a key and the complaint, one after another. [-]
+    """
+    found: dict[str, float] = {}
+    paths: dict[str, KeyPath] = {}
+    for key, path, raw in _pairs(written):
+        try:
+            if key in paths:
+                raise QuantityError(f"{key} has two widths; keep one of them")
+            paths[key] = path
+            found[key] = _width(written, key, raw)
+        except QuantityError as error:
+            yield path, str(error)
+    for order in ORDERS:
+        key = order.key if order.key in found else order.other
+        if key in found and _is_turned(written, order, found):
+            other = order.other if key == order.key else order.key
+            yield paths[key], f"within its width the key can pass {other}, which it may not: {order.why}; narrow it"
+
+
+def _pairs(written: Written) -> Iterator[tuple[str, KeyPath, object]]:
+    raw = written.raw("plus_minus")
+    return widths_written(raw) if isinstance(raw, dict) else iter(())
+
+
+def _width(written: Written, key: str, raw: object) -> float:
+    """Return half the width written for a key. [SI]"""
+    how = _kind_of(key)
+    value = _value(written, key)
+    if value is None:
+        return 0.0  # the key itself has a complaint
+    width = _read(how, raw, value)
+    if not width > 0.0:
+        raise QuantityError(f"{quoted(str(raw))} is no width; write one above 0, or leave the line out")
+    low, high = _limits(how)
+    inner = _ROUNDING * max(abs(low), abs(high))
+    if value - width < low - inner or value + width > high + inner or (_above_low(how) and value - width <= low):
+        start = f"above {how.low} and up to" if _above_low(how) else f"{how.low} to"
+        raise QuantityError(
+            f"plus or minus {shown(str(raw))} takes it outside what is allowed: {start} {how.high} ({how.reason}); "
+            "narrow it"
+        )
+    return width
+
+
+def _kind_of(key: str) -> Quantity | Number | AbsolutePressure:
+    """Return how a key is read that can have a width."""
+    if key not in FIELDS:
+        known = [name for name in FIELDS if _can_vary(_how(name))]
+        raise QuantityError(f"there is no key {quoted(key)}{close_to(key, known)}; write table and key, as in {SAMPLE}")
+    how = _how(key)
+    if isinstance(how, RangeValue | PricesValue):
+        raise QuantityError(
+            "sums of money carry their own width; write [low, base, high] there, as in [900, 1200, 1800]"
+        )
+    if not _can_vary(how):
+        raise QuantityError("it is not one number that can be off; leave it out here")
+    assert isinstance(how, Quantity | Number | AbsolutePressure)
+    return how
+
+
+SAMPLE = 'duty.evaporating = "1 K"'
+
+
+def _how(key: str) -> FileValue | None:
+    return next((extra for extra in FIELDS[key][1].metadata if isinstance(extra, FileValue)), None)
+
+
+def _can_vary(how: FileValue | None) -> bool:
+    return isinstance(how, Quantity | AbsolutePressure) or (isinstance(how, Number) and not how.whole)
+
+
+def _value(written: Written, key: str) -> float | None:
+    """Return the value that a key has in the file or by default; None if it cannot be read. [SI]"""
+    if written.has(key):
+        value: float | None = written.value(key)
+        return value
+    table, _, name = key.rpartition(".")
+    field = FIELDS[key][1]
+    if table != "compressor" and not isinstance(written.raw(table), dict):
+        raise QuantityError(f"the file has no table [{table}]; add it with {name}, or leave this out")
+    why = next((extra for extra in field.metadata if isinstance(extra, WhyDefault)), None)
+    instead = [other for other in (why.unless if why else ()) if written.has(f"{table}.{other}")]
+    if field.is_required() or field.default is None or instead:
+        raise QuantityError(f"the file gives no {name} in [{table}]; add it there, or leave this out")
+    default: float | None = written.value_or_default(key)
+    return default
+
+
+def _read(how: Quantity | Number | AbsolutePressure, raw: object, value: float) -> float:
+    if isinstance(how, Number):
+        return float(Number(0.0, how.high - how.low, "more is all there is", example=how.example).read(raw))
+    kind = "pressure" if isinstance(how, AbsolutePressure) else how.kind
+    is_share = isinstance(raw, str) and raw.rstrip().endswith("%")
+    if is_share and kind not in ("temperature", "pressure", "fraction"):
+        return parse_quantity(raw, "fraction") * abs(value)
+    return parse_quantity(raw, _DIFFERENCES.get(kind, kind))
+
+
+def _limits(how: Quantity | Number | AbsolutePressure) -> tuple[float, float]:
+    if isinstance(how, Number):
+        return how.low, how.high
+    if isinstance(how, AbsolutePressure):
+        return parse_pressure(how.low).value_Pa, parse_pressure(how.high).value_Pa
+    return parse_quantity(how.low, how.kind), parse_quantity(how.high, how.kind)
+
+
+def _above_low(how: FileValue) -> bool:
+    return isinstance(how, Quantity) and how.above_low
+
+
+def _is_turned(written: Written, order: Order, found: Mapping[str, float]) -> bool:
+    """Say whether two keys that are in order can leave it within their widths."""
+    value, other = written.value(order.key), written.value(order.other)
+    if value is None or other is None:
+        return False
+    gap = other - value if order.relation in ("below", "at most") else value - other
+    reach = found.get(order.key, 0.0) + found.get(order.other, 0.0)
+    return gap >= 0.0 and (gap < reach - _ROUNDING or (gap <= reach and order.relation in ("below", "above")))
