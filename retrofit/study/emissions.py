@@ -166,7 +166,8 @@ def year_ends(life_years: ArrayLike) -> FloatArray:
     Returns: 0, 1, 2 ... and the life, shape (..., m); a shorter life than the longest stays where it ends. [years]
     """
     life = np.asarray(life_years, dtype=float)
-    return np.minimum(np.arange(int(np.ceil(life.max())) + 1), life[..., None])
+    ends: FloatArray = np.minimum(np.arange(int(np.ceil(life.max())) + 1), life[..., None])
+    return ends
 
 
 def grid_integral(emissions: Emissions, start: float | None, ends: FloatArray) -> FloatArray:

@@ -269,3 +269,24 @@ def cost_per_tonne_words(found: Appraisal, currency: str, index: int = 0) -> str
     if cost < 0.0:
         return f"saves money too: {-cost:,.0f} {currency} for each tonne of CO2e avoided"
     return f"{cost:,.0f} {currency} for each tonne of CO2e avoided"
+
+
+def energy_words(option: Use, as_is: Use, band: float, index: int = 0) -> str:
+    """Return a word of doubt where a saving of energy is smaller than the model can tell; else nothing.
+
+    Args:
+        option: Electricity of a year with the option.
+        as_is: The same of the plant as it is.
+        band: How far the model may be off, as a share. [-]
+        index: Which of the numbers: 1 is the base of low, base and high. [-]
+    """
+    if option.electricity_J is None or as_is.electricity_J is None:
+        return ""
+    here, there = at(np.asarray(option.electricity_J), index), at(np.asarray(as_is.electricity_J), index)
+    difference, larger = abs(here - there), max(abs(here), abs(there))
+    if difference == 0.0 or difference > band * larger:
+        return ""
+    return (
+        f"the difference in electricity, {difference / larger:.1%}, lies within the ±{band:.0%} of the model: "
+        "no meaningful difference"
+    )

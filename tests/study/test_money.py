@@ -15,6 +15,7 @@ from retrofit.study.first_cost import first_cost
 from retrofit.study.money import (
     Appraisal,
     cost_per_tonne_words,
+    energy_words,
     net_present_value,
     payback_words,
     payback_years,
@@ -91,6 +92,14 @@ def test_words_say_what_does_not_pay():
     assert "saves money too: 50 EUR" in cost_per_tonne_words(found(3.0, -50.0, 10.0), "EUR")
     assert "emits more" in cost_per_tonne_words(found(3.0, np.nan, -1.0), "EUR")
     assert "unknown" in cost_per_tonne_words(found(3.0), "EUR")
+
+
+def test_a_saving_within_the_band_is_said():
+    """By hand: 97 against 100 is 3 %, within 6 %; 90 is not; a plant against itself needs no word."""
+    assert "3.0%, lies within the ±6%" in energy_words(Use(97.0), Use(100.0), 0.06)
+    assert energy_words(Use(90.0), Use(100.0), 0.06) == ""
+    assert energy_words(Use(100.0), Use(100.0), 0.06) == ""
+    assert energy_words(Use(), Use(100.0), 0.06) == ""
 
 
 def test_first_cost_item_by_item(priced):
