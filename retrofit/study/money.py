@@ -159,6 +159,13 @@ class Appraisal:
     extra_cost: FloatArray | None
     life_years: FloatArray | None
 
+    @property
+    def share_paid_back(self) -> float | None:
+        """Share of the draws that pay back within the remaining life. [-]"""
+        if self.payback_years is None or self.life_years is None:
+            return None
+        return float(np.mean(self.payback_years <= self.life_years))
+
 
 def appraise(
     case: Case, first: FirstCost, saving: Saving, option: Tewi, as_is: Tewi, pick: Pick = low_base_high
@@ -197,7 +204,8 @@ def payback_years(first_cost: ArrayLike, yearly_saving: ArrayLike) -> FloatArray
     Args:
         first_cost: What is paid once. [currency]
         yearly_saving: What is saved each year, below 0 if a year costs more. [currency/year]
-    Returns: Years; 0 where nothing is paid and nothing lost, infinite where no saving pays back what was paid.
+    Returns: Years; 0 where nothing is paid and nothing lost, infinite where no saving pays back what was paid (so take
+        quantiles as one of the draws, not between two).
     Source: definition.
     """
     cost, gain = np.broadcast_arrays(np.asarray(first_cost, dtype=float), np.asarray(yearly_saving, dtype=float))
@@ -283,10 +291,29 @@ def energy_words(option: Use, as_is: Use, band: float, index: int = 0) -> str:
     if option.electricity_J is None or as_is.electricity_J is None:
         return ""
     here, there = at(np.asarray(option.electricity_J), index), at(np.asarray(as_is.electricity_J), index)
-    difference, larger = abs(here - there), max(abs(here), abs(there))
-    if difference == 0.0 or difference > band * larger:
+    return _band_words("electricity", here - there, max(here, there), band)
+
+
+def climate_words(option: Tewi, as_is: Tewi, band: float, index: int = 0) -> str:
+    """Return a word of doubt where CO2e avoided is smaller than the model of the electricity can tell; else nothing.
+
+    Args:
+        option: Warming of the option.
+        as_is: Warming of the plant as it is.
+        band: How far the model of the electricity may be off, as a share. [-]
+        index: Which of the numbers: 1 is the base of low, base and high. [-]
+    """
+    totals, indirect = (option.total_kg, as_is.total_kg), (option.indirect_kg, as_is.indirect_kg)
+    if any(found is None for found in (*totals, *indirect)):
+        return ""
+    here, there = (at(found, index) for found in totals if found is not None)
+    return _band_words("CO2e", here - there, max(at(found, index) for found in indirect if found is not None), band)
+
+
+def _band_words(what: str, difference: float, modelled: float, band: float) -> str:
+    if difference == 0.0 or abs(difference) > band * modelled:
         return ""
     return (
-        f"the difference in electricity, {difference / larger:.1%}, lies within the ±{band:.0%} of the model: "
-        "no meaningful difference"
+        f"the difference in {what}, {abs(difference) / modelled:.1%} of what is modelled, lies within the ±{band:.0%} "
+        "of the model: no meaningful difference"
     )

@@ -21,6 +21,7 @@ IntArray = NDArray[np.int64]
 
 LARGEST_WEIGHT = 10.0
 EQUAL_WEIGHT = 5.0
+SMALLEST_STEP = 0.1
 ROUNDING = 1e-9
 SETS, SEED = 2000, 1
 SCALE = (
@@ -259,7 +260,7 @@ def _percent(share: float) -> str:
 
 @dataclass(frozen=True)
 class Flip:
-    """The smallest change of one weight that puts another option before the first: from what weight to what."""
+    """The smallest change of one weight that puts another option before the first by more than the band."""
 
     criterion: str
     weight_now: float
@@ -283,20 +284,21 @@ def flip(scores: Scores, weights: Mapping[str, float] | None = None) -> Flip | N
     Args:
         scores: The scores.
         weights: Weight of each criterion, 0 to 10, by name; 5 for one left out. [-]
-    Returns: The change, for the plain sums, whatever the band.
+    Returns: The change: beyond it the other option is better than today's first by more than the band.
     Raises: ValueError for a weight outside 0 to 10, or for a criterion that there is not.
-    Source: the weighted difference of two options is linear in each weight: it is 0 at one value of it.
+    Source: the weighted difference of two options is linear in each weight, and so is the band.
     """
     used = _weights(scores, weights)
     if len(scores.names) < 2 or not used.any():
         return None
     leader = int(np.argmax(scores.scores @ used))
-    ahead = scores.scores[leader] - scores.scores
+    ahead = scores.scores[leader] - scores.scores + scores.doubts[leader]
     rest = (ahead @ used)[:, None] - ahead * used
     with np.errstate(divide="ignore", invalid="ignore"):
         turning = -rest / ahead
-    # Beyond its turning point the rival has to be ahead, and there must be weights beyond it.
-    can_fall, can_rise = (ahead > 0.0) & (turning > 0.0), (ahead < 0.0) & (turning < LARGEST_WEIGHT)
+    # Beyond its turning point the rival has to be ahead, and there must be a weight beyond it that can be set.
+    can_fall = (ahead > 0.0) & (turning > SMALLEST_STEP)
+    can_rise = (ahead < 0.0) & (turning < LARGEST_WEIGHT - SMALLEST_STEP)
     moves = np.where(can_fall | can_rise, np.abs(turning - used), np.inf)
     moves[leader] = np.inf
     rival, criterion = np.unravel_index(int(np.argmin(moves)), moves.shape)

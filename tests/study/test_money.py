@@ -1,6 +1,7 @@
 """Money: net present value against a library of others, payback and cost per tonne by hand, words that say it."""
 
 from dataclasses import replace
+from datetime import date
 
 import numpy as np
 import numpy_financial
@@ -12,8 +13,10 @@ from retrofit.refrigerants import find
 from retrofit.study.accounts import accounts
 from retrofit.study.emissions import year_ends
 from retrofit.study.first_cost import first_cost
+from retrofit.study.law import LawCheck
 from retrofit.study.money import (
     Appraisal,
+    climate_words,
     cost_per_tonne_words,
     energy_words,
     net_present_value,
@@ -96,7 +99,7 @@ def test_words_say_what_does_not_pay():
 
 def test_a_saving_within_the_band_is_said():
     """By hand: 97 against 100 is 3 %, within 6 %; 90 is not; a plant against itself needs no word."""
-    assert "3.0%, lies within the ±6%" in energy_words(Use(97.0), Use(100.0), 0.06)
+    assert "3.0% of what is modelled, lies within the ±6%" in energy_words(Use(97.0), Use(100.0), 0.06)
     assert energy_words(Use(90.0), Use(100.0), 0.06) == ""
     assert energy_words(Use(100.0), Use(100.0), 0.06) == ""
     assert energy_words(Use(), Use(100.0), 0.06) == ""
@@ -154,6 +157,27 @@ def test_a_year_part_by_part(priced):
     assert "jurisdiction" in found.missing["leak_checks"]
 
 
+@pytest.mark.parametrize(("months", "unknown", "cost"), [(3.0, (), 600.0), (None, (), 0.0), (None, ("charge",), None)])
+def test_leak_checks_follow_the_law(priced, months, unknown, cost):
+    """By hand: every 3 months at 150 are 600 a year; tables that ask for none cost nothing; not known is not nothing."""
+    case = priced(money={"leak_check": 150})
+    law = LawCheck("R404A", "EU", date(2027, 1, 1), None, None, "", {}, {}, (), months, None, (), unknown)
+
+    found = yearly_cost(case, replace(plan_as_is(case, TODAY), law=law), Use(), base_only)
+
+    assert found.parts["leak_checks"] == cost
+
+
+def test_a_levy_falls_on_the_new_charge_too(priced):
+    """By hand: 250 kg x 1273.357 / 1000 x 10 = 3183.39 once, as an item of its own."""
+    case = priced(money={"levy": 10}, change={"labour": 4000})
+
+    items = {item.code: item.amount for item in first_cost(case, plan_for(case, NEW, TODAY), base_only).items}
+
+    assert items["levy"] == pytest.approx(3_183.39, abs=0.01)
+    assert "levy" not in {item.code for item in first_cost(case, plan_for(case, TODAY, TODAY), base_only).items}
+
+
 def test_a_part_known_on_one_side_is_left_out(priced):
     """Without a price of the new refrigerant top-ups count on neither side; without energy there is no saving."""
     case = priced(money={"refrigerant_price": {"R404A": 40}})
@@ -194,7 +218,12 @@ def test_the_whole_account(priced):
     crossing = np.interp(0.0, -new.appraisal.extra_cost, new.appraisal.years)
     assert crossing == pytest.approx(float(new.appraisal.payback_years))
     assert payback_words(new.appraisal) == "4.9 of the 8 years left"
+    # 10 % less electricity and a lighter charge are no draw; the same plant needs no word.
+    assert climate_words(new.tewi, found.as_is.tewi, 0.06) == ""
+    assert "no meaningful difference" in climate_words(new.tewi, found.as_is.tewi, 5.0)
+    assert new.appraisal.share_paid_back == 1.0
     keep = found.options["R404A"]
+    assert climate_words(keep.tewi, found.as_is.tewi, 0.06) == ""
     assert keep.saving.total == 0.0
     assert keep.appraisal.avoided_t == 0.0
     assert "nothing to pay back" in payback_words(keep.appraisal)

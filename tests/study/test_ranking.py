@@ -180,6 +180,18 @@ def test_the_weight_that_flips():
     assert flip(scores_of([[1, 1], [0, 0]])) is None
 
 
+def test_a_flip_has_to_pass_the_band():
+    """By hand, doubt 0.2 in energy: 1.2 w against 0.6 x 5, so R448A is ahead below 2.5; a doubt of 5, below 0.5."""
+    doubts = np.zeros((2, 2, 2))
+    doubts[:, :, 0] = 0.2
+    near, far = scores_of([[1, 0], [0, 0.6]]), scores_of([[1, 0], [0, 0.01]])
+
+    assert flip(replace(near, doubts=doubts)).weight_then == pytest.approx(2.5)
+    assert flip(replace(near, doubts=doubts * 25)).weight_then == pytest.approx(0.5)
+    # Equal at 0.05: no weight that can be set lies below.
+    assert flip(far) is None
+
+
 def test_words_of_stability():
     """One sentence with the shares; what never comes first is not in it."""
     found = scores_of([[1, 1], [0, 0]])
