@@ -159,7 +159,7 @@ def test_a_year_part_by_part(priced):
 
 @pytest.mark.parametrize(("months", "unknown", "cost"), [(3.0, (), 600.0), (None, (), 0.0), (None, ("charge",), None)])
 def test_leak_checks_follow_the_law(priced, months, unknown, cost):
-    """By hand: every 3 months at 150 are 600 a year; tables that ask for none cost nothing; not known is not nothing."""
+    """By hand: every 3 months at 150 are 600 a year; tables asking for none cost nothing; unknown is not nothing."""
     case = priced(money={"leak_check": 150})
     law = LawCheck("R404A", "EU", date(2027, 1, 1), None, None, "", {}, {}, (), months, None, (), unknown)
 
