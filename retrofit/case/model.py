@@ -19,7 +19,7 @@ from retrofit.case.compressor import Compressor
 from retrofit.case.emissions import Emissions
 from retrofit.case.exchangers import Condenser, Evaporator
 from retrofit.case.law import Law
-from retrofit.case.money import Money, Options
+from retrofit.case.money import Money, Option, Options
 from retrofit.case.paper import Report
 from retrofit.case.pipework import Lines, Receiver, Valve
 from retrofit.case.plant import Compare, Duty, Plant
@@ -91,6 +91,22 @@ FIELDS: Mapping[str, tuple[str, FieldInfo]] = {
     if f"{name}.{field.alias}" not in TABLES
 }
 """Attribute and field of every key of a table, by its full name: "lines.suction.diameter"."""
+
+OPTION_FIELDS: Mapping[str, tuple[str, FieldInfo]] = {
+    field.alias or attribute: (attribute, field) for attribute, field in Option.model_fields.items()
+}
+"""The same of every key of one option, by its last name: its table is named by the user's refrigerants."""
+
+
+def field_of(key: str) -> tuple[str, FieldInfo] | None:
+    """Return attribute and field of a key, of an option's too; None if there is no such key.
+
+    Args:
+        key: Its full name, such as "duty.cooling" or "options.R454C.leak_rate". [-]
+    """
+    table, _, name = key.rpartition(".")
+    is_option = table.startswith("options.") and table.count(".") == 1
+    return OPTION_FIELDS.get(name) if is_option else FIELDS.get(key)
 
 
 @dataclass(frozen=True)

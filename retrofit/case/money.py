@@ -133,6 +133,15 @@ class Options(Table):
         """The options given, by designation."""
         return {designation_of(name): option for name, option in self.__pydantic_extra__.items()}
 
+    def named(self, name: str) -> Option | None:
+        """Return the option of a refrigerant, however it is spelled; None if it has none.
+
+        Args:
+            name: Its designation, or another spelling of it. [-]
+        Raises: QuantityError if the catalogue has no such refrigerant.
+        """
+        return self.by_refrigerant.get(designation_of(name))
+
 
 class Money(Table):
     """Prices, in a currency that the user names; nothing is converted."""

@@ -31,6 +31,12 @@ def problems_of_year(written: Written) -> Complaints:
     yield from _bins(written)
     yield from _exchangers(written)
     yield from _base_above_duty(written)
+    yield from _approach_to_nothing(written)
+    if written.value("year.serves") == "heating" and not written.has("year.peak_load"):
+        yield (
+            path_of("year.serves"),
+            "the duty is cooling and says no heat; add peak_load, the largest heat of the year",
+        )
 
 
 def _one_way(written: Written) -> Complaints:
@@ -77,6 +83,14 @@ def _base_above_duty(written: Written) -> Complaints:
     if base_W is not None and duty_W is not None and base_W > duty_W:
         base, duty = (quoted(str(written.raw(key))) for key in ("year.base_load", "duty.cooling"))
         yield path_of("year.base_load"), f"{base} is above the peak, duty.cooling {duty}; lower it, or add peak_load"
+
+
+def _approach_to_nothing(written: Written) -> Complaints:
+    for way in ("condenser", "evaporator"):
+        key = f"year.{way}_approach"
+        if written.value(key) and written.value_or_default(f"year.{way}_follows") == "constant":
+            what = f"{way}_follows is constant, and its inlet is that of [{way}]"
+            yield path_of(key), f"{what}; leave the approach out, or say what the inlet follows"
 
 
 def problems_of_options(written: Written) -> Complaints:

@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Mapping
 from typing import Any
 
-from retrofit.case.model import FIELDS
+from retrofit.case.model import field_of
 from retrofit.case.positions import KeyPath
 from retrofit.case.table import Items
 from retrofit.case.values import FileValue
@@ -53,10 +53,12 @@ class Written:
 
     def value_or_default(self, key: str) -> Any:
         """Return the value of a full key as `value` does, or its default if the file leaves it out."""
-        return self._value(key, self.raw(key) if self.has(key) else FIELDS[key][1].default)
+        found = field_of(key)
+        return self._value(key, self.raw(key) if self.has(key) or not found else found[1].default)
 
     def _value(self, key: str, raw: Any) -> Any:
-        for extra in FIELDS[key][1].metadata:
+        found = field_of(key)
+        for extra in found[1].metadata if found else ():
             if isinstance(extra, FileValue):
                 return self._read(extra, raw)
             if isinstance(extra, Items):

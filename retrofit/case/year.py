@@ -92,7 +92,7 @@ class Year(Table):
     )
     evaporator_approach_K: Annotated[
         float, Quantity("temperature difference", "-40 K", "40 K", "evaporators lie within it"),
-        WhyDefault("the evaporator draws what it follows"),
+        WhyDefault("the evaporator draws what it follows", beside="evaporator_follows"),
     ] = key("evaporator_approach", "Inlet of the evaporator above what it follows.", "0 K")  # fmt: skip
     serves: Annotated[str, Choice(("cooling", "heating")), WhyDefault("the plant is there to cool")] = key(
         "serves", "Whether the load is cooling, or heat from the condenser.", "cooling"
@@ -117,7 +117,7 @@ class Year(Table):
     defrost_power_W: _POWER = key("defrost_power", "Electrical power of defrosting, mean over the year.", None)
     defrost_to_load: Annotated[
         float, Quantity("fraction", "0 %", "100 %", "a share of the defrost heat"),
-        WhyDefault("all heat of defrosting has to be cooled away again; a usual upper bound"),
+        WhyDefault("all heat of defrosting has to be cooled away again; a usual upper bound", beside="defrost_power"),
     ] = key("defrost_to_load", "Share of the defrost heat that becomes load.", "100 %")  # fmt: skip
     evaporator_fans_W: _POWER = key("evaporator_fans", "Fans or pumps at the evaporators, running all hours.", None)
     condenser_fans_W: _POWER = key(
