@@ -30,6 +30,8 @@ EPILOG = (
     "Nothing here replaces ASHRAE 34 and 15, ISO 817 and 5149 or EN 378, local code and licensed practice."
 )
 CASE = click.Path(path_type=Path)
+OWN_NAME = Path()  # stands for the case's name with the ending of the form
+READ_WITH = {"html": " Open it in a browser; print it from there for paper or PDF.", "pdf": "", "xlsx": ""}
 WIDEST_PROSE = 100
 INTERRUPTED = 128 + 2  # by the custom of shells: 128 and the number of the signal
 # What stands for a sign that the encoding of a stream has no place for; a minus must never get lost.
@@ -142,6 +144,11 @@ on_option = click.option(
 json_option = click.option("--json", "as_json", is_flag=True, help="One JSON object in SI base units.")
 
 
+def _form_option(name: str, text: str) -> Callable[[Any], Any]:
+    """Return an option that names a file, or stands by itself for the case's own name."""
+    return click.option(name, type=CASE, is_flag=False, flag_value=str(OWN_NAME), metavar="[FILE]", help=text)
+
+
 @click.group(epilog=EPILOG, context_settings={"help_option_names": ["-h", "--help"]})
 @click.version_option(__version__, "-V", "--version", prog_name="retrofit")
 def main() -> None:
@@ -150,7 +157,7 @@ def main() -> None:
     \b
     retrofit new plant.toml         start a case file
     retrofit compare plant.toml     compare the candidates in the terminal
-    retrofit report plant.toml      write the report as one HTML file
+    retrofit report plant.toml      write the report: HTML, PDF, spreadsheet
     retrofit rerun plant.html       compute a report again
     """
 
@@ -217,20 +224,43 @@ def compare(case_file: Path, units: str, as_json: bool, as_csv: bool, on: dateti
 
 @main.command()
 @click.argument("case_file", type=CASE, metavar="CASE")
-@click.option("-o", "--output", type=CASE, help="File to write; the case's name with .html if left out.")
+@click.option("-o", "--output", type=CASE, help="HTML file to write; the case's name with .html if left out.")
+@_form_option("--pdf", "Write a PDF; its name, or the case's with .pdf. Without -o no HTML then.")
+@_form_option("--xlsx", "Write a spreadsheet; its name, or the case's with .xlsx. Without -o no HTML then.")
 @units_option
 @click.option("--templates", type=CASE, help="Folder of your own templates, laid over the built-in ones.")
 @on_option
 @_guarded
-def report(case_file: Path, output: Path | None, units: str, templates: Path | None, on: datetime | None) -> None:
-    """Write the report of a CASE as one HTML file."""
-    from retrofit.report import render_html, write_report
+def report(
+    case_file: Path,
+    output: Path | None,
+    pdf: Path | None,
+    xlsx: Path | None,
+    units: str,
+    templates: Path | None,
+    on: datetime | None,
+) -> None:
+    """Write the report of a CASE as one HTML file, as PDF or as spreadsheet, each whole or not at all."""
+    from retrofit.report.files import write_whole
+    from retrofit.report.outputs import render_forms, require
 
+    paths = _report_paths(case_file, {"html": output, "pdf": pdf, "xlsx": xlsx})
+    require(paths)
     comparison = _compared(case_file, on)
-    html = render_html(comparison, units=units, template_folder=templates, made_at=datetime.now().astimezone())
-    path = output or Path(f"{case_file.stem}.html")
-    write_report(path, html)
-    click.echo(f"Wrote {path}. Open it in a browser; print it from there for paper or PDF.")
+    contents = render_forms(paths, comparison, units, templates, made_at=datetime.now().astimezone())
+    for form, path in paths.items():
+        write_whole(path, contents[form])
+        click.echo(f"Wrote {path}.{READ_WITH[form]}")
+
+
+def _report_paths(case_file: Path, asked: dict[str, Path | None]) -> dict[str, Path]:
+    """Return where to write each form asked for; of several, none over another or over the case."""
+    named = {form: path for form, path in asked.items() if path is not None} or {"html": OWN_NAME}
+    paths = {form: Path(f"{case_file.stem}.{form}") if path == OWN_NAME else path for form, path in named.items()}
+    places = [case_file.resolve(), *(path.resolve() for path in paths.values())]
+    if len(set(places)) < len(places):
+        raise click.UsageError("the files to write have to differ from each other and from the case")
+    return paths
 
 
 @main.command(epilog="Exit status: 0 nothing differs; 1 something differs, or the file cannot be used; 2 wrong usage.")

@@ -8,7 +8,8 @@ RetrofitError
 ├── OutsideValidRangeError    a state lies outside the stated range of a model (also ValueError)
 ├── NoSolutionError           an equation has no solution for the values given
 ├── ModelFaultError           the property model gave an answer that fails its own checks
-└── ReportError               the report cannot be written
+├── ReportError               the report cannot be written
+└── MissingPartError          an optional part of the installation is not there
 
 A message says what is wrong, the value and unit given, what is allowed, and what to do next.
 """
@@ -110,3 +111,10 @@ class ReportError(RetrofitError):
     """The report cannot be written."""
 
     slug = "report"
+
+
+class MissingPartError(RetrofitError):
+    """An optional part of the installation is not there; the message says how to add it."""
+
+    slug = "missing-part"
+    exit_code = 2

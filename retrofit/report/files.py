@@ -11,12 +11,12 @@ from pathlib import Path
 from retrofit.errors import ReportError
 
 
-def write_whole(path: Path, text: str) -> None:
-    """Write a text file under a temporary name in its folder, then rename it into place.
+def write_whole(path: Path, content: str | bytes) -> None:
+    """Write a file under a temporary name in its folder, then rename it into place.
 
     Args:
         path: File to write; one that is there is replaced.
-        text: Its content.
+        content: Its content; text is written in UTF-8.
     Raises: ReportError if the folder is missing or cannot be written, or the path is no
         ordinary file.
     """
@@ -34,8 +34,8 @@ def write_whole(path: Path, text: str) -> None:
     except OSError as error:
         raise ReportError(f"{path.parent} cannot be written: {error.strerror}; choose another folder") from error
     try:
-        with os.fdopen(handle, "w", encoding="utf-8", newline="\n") as file:
-            file.write(text)
+        with os.fdopen(handle, "wb") as file:
+            file.write(content.encode("utf-8") if isinstance(content, str) else content)
         os.chmod(name, 0o666 & ~_mask())
         os.replace(name, path)
     except OSError as error:

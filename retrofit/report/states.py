@@ -56,14 +56,14 @@ def _portrait(comparison: Comparison, place: int, units: UnitSystem) -> Portrait
     name, composition = entry.refrigerant.display_name, composition_text(entry.refrigerant)
     if entry.lines is None:
         return Portrait(place, name, composition, entry.reason or "", None, (), None)
-    points = _on_reference(entry, units)
+    points = on_reference(entry, units)
     steps = hand_check(comparison, entry, points, units)
     return Portrait(
         place, name, composition, "", _table(entry, points, units), steps, cycle_chart(comparison, place, units)
     )
 
 
-def _on_reference(entry: Entry, units: UnitSystem) -> tuple[dict[str, float | None], ...]:
+def on_reference(entry: Entry, units: UnitSystem) -> tuple[dict[str, float | None], ...]:
     """Return the points with enthalpy and entropy counted from the reference of the reader's units."""
     assert entry.lines is not None
     zero = entry.lines.zeros[units.name]

@@ -1,0 +1,77 @@
+"""The first sheet: what the file is, what it was made with, how to read it, and every caution."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from datetime import datetime
+from pathlib import PurePath
+
+from retrofit.checks import answer, not_checked
+from retrofit.report.carried.made_with import versions_of
+from retrofit.report.carried.result import fingerprint
+from retrofit.report.cautioning import DEFERENCE, caution_groups
+from retrofit.report.comparing import convention
+from retrofit.report.judging import spelled
+from retrofit.report.spreadsheet.table import Column, Sheet
+from retrofit.study import Comparison
+from retrofit.units import UnitSystem
+
+COLUMNS = (Column("Topic", width=14), Column("About", width=34), Column("Text", width=100), Column("Source", width=30))
+HELD = {
+    "Inputs": "Every key of the case: given, assumed with its reason, or left out.",
+    "Results": "One row for each refrigerant and basis.",
+    "Points": "One row for each refrigerant and state point of its cycle.",
+    "Sources": "Every catalogue value, caution and threshold behind the results, with where it comes from.",
+}
+READING = (
+    ("Numbers", "Numbers are not rounded; the format of a cell shows fewer digits than it holds."),
+    ("Empty cells", "An empty cell is a value that is not known or does not exist, never zero; a column says why."),
+    ("Ratios", "A ratio to today is the value with the candidate over the value with the refrigerant in the plant."),
+    ("Verdicts", "A verdict covers what was checked here and nothing else; none says that a plant is without danger."),
+)
+Row = tuple[str, str, str, str]
+
+
+def read_me_sheet(comparison: Comparison, units: UnitSystem, made_at: datetime) -> Sheet:
+    """Return the sheet.
+
+    Args:
+        comparison: An assessed result.
+        units: The reader's units.
+        made_at: The time to print.
+    """
+    rows = (*_about(comparison, units, made_at), *_cautions(comparison), *_reading(comparison))
+    return Sheet("Read me", 2, COLUMNS, tuple(rows))
+
+
+def _about(comparison: Comparison, units: UnitSystem, made_at: datetime) -> Iterator[Row]:
+    case = comparison.case
+    yield "Report", "Refrigerant changeover, comparison of options", case.title, ""
+    if case.about:
+        yield "Report", "Plant", case.about, ""
+    yield "Report", "Answer", spelled(answer(comparison, units).headline), ""
+    yield "Report", "Case file", PurePath(case.path).name, ""
+    yield "Report", "Made", made_at.isoformat(timespec="minutes"), ""
+    yield "Report", "Units", {"si": "metric", "ip": "inch-pound"}[units.name], ""
+    for name, version in versions_of(comparison).items():
+        yield "Report", f"Version of {name}", version, ""
+    if comparison.law:
+        yield "Report", "Tables of law read for", comparison.law.on.isoformat(), ""
+    yield "Report", "Fingerprint of the result", fingerprint(comparison), ""
+
+
+def _cautions(comparison: Comparison) -> Iterator[Row]:
+    yield "Caution", "All refrigerants", DEFERENCE, ""
+    for group in caution_groups(comparison):
+        for item in group.items:
+            yield "Caution", item.about, f"{item.caution.title}. {item.caution.text}", item.caution.source
+    for text in not_checked(comparison):
+        yield "Not checked", "", spelled(text), ""
+
+
+def _reading(comparison: Comparison) -> Iterator[Row]:
+    yield "How to read", "Convention", convention(comparison), ""
+    for about, text in READING:
+        yield "How to read", about, text, ""
+    for name, text in HELD.items():
+        yield "Sheet", name, text, ""
