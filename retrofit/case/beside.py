@@ -55,7 +55,8 @@ class Outdoors:
         key = path_of("year.weather")
         try:
             path = file_beside(case_path, file)
-            self.weather = weather_of_file(path, shown(path, LONGEST_NAME))
+            # Where the case stands is no part of what it says.
+            self.weather = replace(weather_of_file(path, shown(path, LONGEST_NAME)), source=shown(file, LONGEST_NAME))
         except QuantityError as error:
             self.complaints.append((key, str(error)))
         except CaseFileError as error:

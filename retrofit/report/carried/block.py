@@ -10,7 +10,7 @@ import base64
 import json
 import zlib
 from datetime import datetime
-from pathlib import Path, PurePath
+from pathlib import PurePath, PurePosixPath
 from typing import Any
 
 from retrofit.checks.law.reader import FOLDER, own_files
@@ -75,9 +75,12 @@ def _data(comparison: Comparison, units: str, made_at: datetime, html: str) -> d
 
 def _files(comparison: Comparison) -> dict[str, bytes]:
     """Return what stands beside the case and was used for the result, by its path from there."""
-    if comparison.law is None or not any(table.is_own for table in comparison.law.tables):
-        return {}
-    return {f"{FOLDER}/{path.name}": Path(path).read_bytes() for path in own_files(comparison.case.path)}
+    case, found = comparison.case, {}
+    if case.year and case.year.weather and case.weather:
+        found[PurePosixPath(case.year.weather).as_posix()] = case.weather.text.encode("utf-8")
+    if comparison.law and any(table.is_own for table in comparison.law.tables):
+        found |= {f"{FOLDER}/{path.name}": path.read_bytes() for path in own_files(case.path)}
+    return found
 
 
 def _lines(content: bytes) -> list[str]:

@@ -26,6 +26,7 @@ LARGEST_REPORT_BYTES = 100_000_000
 LARGEST_RESULT_BYTES = 100_000_000
 MOST_FILES = 100
 LONGEST_NAME = 200  # characters
+DEEPEST = 8  # folders
 AGAIN = "take the file as it was written, or write it again with `retrofit report`"
 
 
@@ -195,9 +196,9 @@ def _decoded(lines: list[str]) -> bytes:
 
 
 def _checked(file: str, name: str) -> str:
-    """Return the path of a file beside the case if it stays there: plain names, at most one folder down."""
+    """Return the path of a file beside the case if it stays there: plain names, a few folders down."""
     parts = file.split("/")
-    if len(parts) > 2 or len(file) > LONGEST_NAME or not all(_is_plain(part) for part in parts):
+    if len(parts) > DEEPEST or len(file) > LONGEST_NAME or not all(_is_plain(part) for part in parts):
         _refuse(name, f'it carries a file named "{shown(file)}", which could stand outside the folder of its case')
     return file
 

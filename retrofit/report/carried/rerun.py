@@ -15,6 +15,9 @@ from retrofit.report.carried.made_with import PROGRAM, data_digests, group_of, v
 from retrofit.report.carried.reader import Carried
 from retrofit.report.carried.result import digest, result_of
 from retrofit.study import Comparison, compare
+from retrofit.units import shown
+
+CASE_FILE = "case.toml"
 
 ALTERED = {
     "case": "the case in the file was edited after the report was made: its digest does not fit",
@@ -91,20 +94,40 @@ def _computed(carried: Carried, on_build: Callable[[str], None] | None) -> Compa
     """Compute from files in a folder of its own; of the names in the report only those of checked files are used."""
     with tempfile.TemporaryDirectory(prefix="retrofit-rerun-") as name:
         folder = Path(name).resolve()
-        for place, content in {"case.toml": carried.case_text.encode("utf-8"), **carried.files}.items():
-            path = (folder / place).resolve()
-            if not path.is_relative_to(folder):
-                raise ReportError(f"{carried.name}: it carries a file that would stand outside its folder")
-            path.parent.mkdir(exist_ok=True)
-            path.write_bytes(content)
+        case_file = folder / _free_name(carried)
+        _write_inside(folder, {case_file.name: carried.case_text.encode("utf-8"), **carried.files}, carried.name)
         try:
-            return assess(compare(_titled(read_case(folder / "case.toml"), carried), on_build), carried.on)
+            return assess(compare(_titled(read_case(case_file), carried), on_build), carried.on)
         except CaseFileError as error:
             raise _unusable(carried, error) from error
 
 
+def _free_name(carried: Carried) -> str:
+    """Return a name for the case that none of its files has."""
+    name = CASE_FILE
+    while name in carried.files:
+        name = f"_{name}"
+    return name
+
+
+def _write_inside(folder: Path, files: Mapping[str, bytes], name: str) -> None:
+    """Write files into a folder; one that would stand outside it, or over another, is refused."""
+    for place, content in files.items():
+        path = (folder / place).resolve()
+        try:
+            if not path.is_relative_to(folder):
+                raise ValueError
+            path.parent.mkdir(parents=True, exist_ok=True)
+            path.write_bytes(content)
+        except (OSError, ValueError) as error:
+            raise ReportError(
+                f'{name}: it carries a file "{shown(place)}" that cannot stand beside its case'
+            ) from error
+
+
 def _unusable(carried: Carried, error: CaseFileError) -> ReportError:
-    where = "its case" if PurePath(error.path).name == "case.toml" else PurePath(error.path).name
+    name = PurePath(error.path).name
+    where = "its case" if name == _free_name(carried) else name
     problems = "; ".join(problem.located(where) for problem in error.problems[:3])
     edited = "; it was edited after the report was made" if "case" in carried.altered else ""
     return ReportError(

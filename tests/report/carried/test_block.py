@@ -72,6 +72,26 @@ def test_own_tables_of_law_travel_with_the_case(made_at, tmp_path, written):
     assert read_carried(written(html)).files == {"law/eu-2024-573.toml": table + b"# ours\n"}
 
 
+def test_the_weather_of_a_year_travels_with_the_case(made_at, tmp_path, written):
+    """The file of hours that the case names, and a result that does not depend on where the case stands."""
+    from retrofit.case import read_case
+    from retrofit.checks import assess
+    from retrofit.report.carried import rerun
+    from retrofit.study import compare
+
+    weather = "hour,dry_bulb [degC]\n" + "".join(f"{hour},{hour % 24}\n" for hour in range(1, 8761))
+    text = (ROOT / "cases" / "office-chiller.toml").read_text(encoding="utf-8")
+    (tmp_path / "data").mkdir()
+    (tmp_path / "data" / "coast.csv").write_text(weather, encoding="utf-8")
+    (tmp_path / "plant.toml").write_text(text + '\n[year]\nweather = "./data/coast.csv"\n', encoding="utf-8")
+    result = assess(compare(read_case(tmp_path / "plant.toml")))
+    kept = read_carried(written(render_html(result, made_at=made_at)))
+
+    assert result.case.weather.source == "./data/coast.csv"
+    assert kept.files == {"data/coast.csv": weather.encode()}
+    assert not rerun(kept).differs
+
+
 # The canonical form
 
 
@@ -270,7 +290,20 @@ def test_a_result_that_unpacks_without_end_is_refused(page_of, block_of, written
 
 
 @pytest.mark.parametrize(
-    "name", ["../x.toml", "/etc/x", "law/../../x", "a/b/c", "law//x", "..", ".", "law/\x1b", "a\\..\\b", "", "x" * 300]
+    "name",
+    [
+        "../x.toml",
+        "/etc/x",
+        "law/../../x",
+        "a/b/c/d/e/f/g/h/i",
+        "law//x",
+        "..",
+        ".",
+        "law/\x1b",
+        "a\\..\\b",
+        "",
+        "x" * 300,
+    ],
 )
 def test_a_name_that_leads_out_of_the_folder_is_refused(name, page_of, edited, written):
     """However it is written, and though its digest fits."""

@@ -155,6 +155,18 @@ def test_a_case_this_version_cannot_use_is_an_error_of_ours(html, edited, again)
     assert "it was edited" in found.value.message
 
 
+@pytest.mark.parametrize("files", [["case.toml"], ["a", "a/b"]], ids=["named as the case", "under a file"])
+def test_files_of_a_hostile_report_do_no_harm(files, html, edited, written):
+    """A file named as the case does not take its place; one that cannot be written is refused in one sentence."""
+    changed = edited(html, lambda d, r: d["files"].update({name: ["YQ=="] for name in files}), sealed=True)
+    kept = read_carried(written(changed))
+    if len(files) == 1:
+        assert not rerun(kept).differs
+    else:
+        with pytest.raises(ReportError, match="cannot stand beside its case"):
+            rerun(kept)
+
+
 def test_the_json_has_every_difference(html, edited, again):
     """What a script needs: whether, what, why, and both fingerprints."""
     found = json.loads(json.dumps(rerun_json(again(edited(html, _older, sealed=True))), allow_nan=False))
