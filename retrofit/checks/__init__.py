@@ -3,6 +3,7 @@
 No check changes a number. A missing datum is a finding of level `unknown`, never a good one.
 """
 
+from retrofit.checks.advice import Advice, advice, deed
 from retrofit.checks.answer import Answer, Matter, answer
 from retrofit.checks.assess import LEVELS, VERDICTS, assess, verdict
 from retrofit.checks.limits import not_checked
@@ -11,12 +12,15 @@ from retrofit.checks.thresholds import Band, Threshold, model_band, threshold, t
 __all__ = [
     "LEVELS",
     "VERDICTS",
+    "Advice",
     "Answer",
     "Band",
     "Matter",
     "Threshold",
+    "advice",
     "answer",
     "assess",
+    "deed",
     "model_band",
     "not_checked",
     "threshold",

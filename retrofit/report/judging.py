@@ -127,7 +127,7 @@ def _judged(place: int, entry: Entry, numbers: Mapping[Subject, int]) -> Judged:
         entry.refrigerant.safety_class.text or "not stated",
         FAMILY_WORDS[entry.family],
         entry.verdict or "not judged",
-        _reasons(entry),
+        reasons(entry),
         tuple(_found(finding, numbers) for finding in entry.findings),
     )
 
@@ -140,8 +140,12 @@ def _found(finding: Finding, numbers: Mapping[Subject, int]) -> Found:
     return Found(level, LEVEL_WORDS[level], title, fact[:1].upper() + fact[1:], advice, origin, numbers.get(subject))
 
 
-def _reasons(entry: Entry) -> str:
-    """Return the titles of the findings that decide the verdict, or the work if nothing stands against it."""
+def reasons(entry: Entry) -> str:
+    """Return the titles of the findings that decide the verdict, or the work if nothing stands against it.
+
+    Args:
+        entry: An assessed refrigerant.
+    """
     for level in ("stop", "unknown", "work"):
         titles = [spelled(finding.title) for finding in entry.findings if finding.level == level]
         if titles:

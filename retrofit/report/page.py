@@ -9,11 +9,11 @@ from pathlib import PurePath
 
 from retrofit import figures
 from retrofit.case import Case
-from retrofit.case.values import is_hidden
 from retrofit.checks import answer, model_band, not_checked
 from retrofit.report.cautioning import DEFERENCE, CautionGroup, caution_groups
 from retrofit.report.comparing import comparison_table, convention
 from retrofit.report.found import AsFound, as_found
+from retrofit.report.front import Front, front, plain
 from retrofit.report.guard import POLICY
 from retrofit.report.hardware import Hardware, hardware
 from retrofit.report.inputs import Input, LeftOut, Taken, defaults, fixed, inputs, missing
@@ -71,6 +71,7 @@ class Page:
     annex: tuple[Place, ...]
     number: Mapping[str, str]
     where: Mapping[str, str]
+    front: Front
     answer: Answered
     convention: str
     band: str
@@ -130,6 +131,7 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
         annex=detail,
         number={place.name: place.number for place in (*main, *detail)},
         where={place.name: place.words for place in (*main, *detail)},
+        front=front(comparison, units),
         answer=_answer(comparison, units),
         convention=convention(comparison),
         band=band_text(units),
@@ -162,11 +164,6 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
         check_sources=threshold_sources(comparison),
         not_checked=not_checked(comparison),
     )
-
-
-def plain(text: str) -> str:
-    """Return a text with characters that command or turn the writing round written out, such as \\x1b."""
-    return "".join(c.encode("unicode_escape").decode("ascii") if is_hidden(c) else c for c in text)
 
 
 def css_string(text: str) -> str:

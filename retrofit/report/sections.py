@@ -59,6 +59,7 @@ MAIN = (
     Section("room", "Charge and room", has_room),
     Section("assumptions", "Assumptions"),
     Section("limits", "Limits"),
+    Section("signing", "Sign-off"),
 )
 ANNEX = (
     Section("findings", "Findings"),

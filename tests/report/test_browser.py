@@ -14,9 +14,9 @@ ROOT = Path(__file__).resolve().parents[2]
 pytestmark = pytest.mark.browser
 SHOWN = ["harbour-market", "freezer-store", "coast-heat-pump"]
 HEADINGS = [
-    "Question and answer", "Options considered", "Cautions by safety class", "The plant as found",
+    "Summary", "Options considered, and what is rejected", "Cautions by safety class", "The plant as found",
     "What the law asks, and when", "Comparison on three bases", "Charts", "Hardware, component by component",
-    "Charge against the room", "Assumptions", "Limits: what was not checked",
+    "Charge against the room", "Assumptions", "Limits: what was not checked", "Sign-off and revisions",
     "Findings and verdict for each refrigerant", "Components, one by one", "Charge and room: the working",
     "Law: row by row", "State points, and how to check them by hand", "Inputs: values the case gives",
     "How far the model can be trusted", "Terms", "Sources",
