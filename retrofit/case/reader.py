@@ -116,12 +116,12 @@ def _completed(data: Mapping[str, Any], heats: tuple[Default, ...]) -> dict[str,
 
 
 def _defaults(model: CaseFile) -> Iterator[Default]:
-    for name, table_class in TABLES.items():
+    for name in TABLES:
         table: Any = model
         for part in name.split("."):
             table = getattr(table, part, None)
         if table is not None:
-            yield from _defaults_of(name, table_class, _written_keys(table))
+            yield from _defaults_of(name, table)
     for way, exchanger in (("evaporator", model.evaporator), ("condenser", model.condenser)):
         factors = exchanger.film_factor.by_refrigerant if exchanger else ()
         others = [name for name in model.compare.candidates if name not in dict(factors)]
@@ -134,10 +134,11 @@ def _written_keys(table: Table) -> set[str | None]:
     return {type(table).model_fields[name].alias for name in table.model_fields_set & set(type(table).model_fields)}
 
 
-def _defaults_of(name: str, table_class: type[Table], written: set[str | None]) -> Iterator[Default]:
-    for field in table_class.model_fields.values():
+def _defaults_of(name: str, table: Table) -> Iterator[Default]:
+    written = _written_keys(table)
+    for field in type(table).model_fields.values():
         why = next((extra for extra in field.metadata if isinstance(extra, WhyDefault)), None)
-        if why is None or field.alias in written:
+        if why is None or field.alias in written or getattr(table, why.moot_if[0], None) == why.moot_if[1]:
             continue
         if (not why.beside or why.beside in written) and not written & set(why.unless):
             yield Default(f"{name}.{field.alias}", _as_text(field.default), why.text)

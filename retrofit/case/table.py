@@ -21,12 +21,14 @@ class Table(BaseModel):
 class WhyDefault:
     """Why the default of a field is what it is: a sentence for the list of assumptions.
 
-    The default is taken only if the key `beside` is there and none of `unless` is.
+    The default is taken only if the key `beside` is there and none of `unless` is, and tells something only
+    if the key `moot_if[0]` has another value than `moot_if[1]`.
     """
 
     text: str
     beside: str = ""
     unless: tuple[str, ...] = ()
+    moot_if: tuple[str, str] = ("", "")
 
 
 @dataclass(frozen=True)

@@ -85,14 +85,14 @@ class Year(Table):
     )
     condenser_approach_K: Annotated[
         float, Quantity("temperature difference", "-20 K", "40 K", "condensers lie within it"),
-        WhyDefault("the condenser draws what it follows, unwarmed"),
+        WhyDefault("the condenser draws what it follows, unwarmed", moot_if=("condenser_follows", "constant")),
     ] = key("condenser_approach", "Inlet of the condenser above what it follows.", "0 K")  # fmt: skip
     evaporator_follows: Annotated[str, Choice(FOLLOWS), WhyDefault("what is cooled keeps its temperature all year")] = (
         key("evaporator_follows", "What the inlet of the evaporator follows.", "constant")
     )
     evaporator_approach_K: Annotated[
         float, Quantity("temperature difference", "-40 K", "40 K", "evaporators lie within it"),
-        WhyDefault("the evaporator draws what it follows", beside="evaporator_follows"),
+        WhyDefault("the evaporator draws what it follows", moot_if=("evaporator_follows", "constant")),
     ] = key("evaporator_approach", "Inlet of the evaporator above what it follows.", "0 K")  # fmt: skip
     serves: Annotated[str, Choice(("cooling", "heating")), WhyDefault("the plant is there to cool")] = key(
         "serves", "Whether the load is cooling, or heat from the condenser.", "cooling"

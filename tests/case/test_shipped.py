@@ -7,6 +7,7 @@ import tomllib
 from pathlib import Path
 
 import jsonschema
+import numpy as np
 import pytest
 import tomlkit
 from hypothesis import given
@@ -45,7 +46,8 @@ def test_a_shipped_case_reads_and_states_its_plant(path):
 
     assert "invented" in case.about
     assert case.title != path.stem
-    core = [default.key for default in case.defaults if not default.key.startswith(("evaporator.", "condenser."))]
+    told = ("evaporator.", "condenser.", "year.", "emissions.")
+    core = [default.key for default in case.defaults if not default.key.startswith(told)]
     assert core == ["plant.altitude"]
     assert case.compressor.swept_volume_m3_per_s is not None
 
@@ -85,6 +87,46 @@ def test_the_first_plant_is_the_documented_one():
         3.0,
     )
     assert {"R448A", "R449A", "R407A", "R407H", "R452A", "R454C"} <= set(case.compare.candidates)
+
+
+def test_the_first_plant_shows_a_whole_year_with_nothing_assumed():
+    """The harbour market states its year, emissions, money, options and widths, and says that its prices are invented."""
+    path = next(path for path in CASES if path.stem == "harbour-market")
+    case = read_case(path)
+
+    assert case.year.metered_J == pytest.approx(1.08e12)  # 300 000 kWh
+    assert case.emissions.leak_rate == case.law.annual_leak_rate == pytest.approx(0.15)
+    assert case.emissions.grid_factor_kg_per_J == pytest.approx(0.35 / 3.6e6)
+    assert (case.money.tariff.base, case.law.remaining_life_years) == (0.18, 8.0)
+    assert set(case.options.by_refrigerant) == {"R404A", "R454C"}
+    assert len(case.widths) >= 10
+    assert not [default.key for default in case.defaults if default.key.startswith(("year.", "emissions."))]
+    assert "every price is invented" in path.read_text("utf-8")
+
+
+def test_shipped_years_are_told_in_each_way():
+    """A climate, bins and a file of hours are among the ten, and a plant that heats."""
+    years = {path.stem: case for path in CASES if (case := read_case(path)).year is not None}
+
+    ways = {name: "file" if case.weather.text else case.weather.source for name, case in years.items()}
+    assert set(ways.values()) == {"an invented climate", "bins of the case", "file"}
+    assert [name for name, case in years.items() if case.year.serves == "heating"] == ["coast-heat-pump"]
+    for case in years.values():
+        largest = case.year.peak_load_W or case.duty.cooling_W
+        assert 0.8 < largest / case.duty.cooling_W < 1.6  # a heat pump's heat is its cooling and its power
+
+
+def test_the_hours_of_the_coast_follow_the_formula_they_state():
+    """The file of hours is the formula in its remarks, rounded: no station measured it."""
+    weather = read_case(next(path for path in CASES if path.stem == "coast-heat-pump")).weather
+    t = np.arange(8760) + 0.5
+    d = t / 24.0
+    pi = np.pi
+    T = 6 + 7 * np.cos(2 * pi * (d - 202) / 365) + 2.5 * np.cos(2 * pi * (t - 15) / 24)
+    T = T + 3 * np.sin(2 * pi * d / 11) + 1.5 * np.sin(2 * pi * d / 4.3)
+
+    assert weather.T_dry_bulb_K - 273.15 == pytest.approx(T, abs=0.05 + 1e-9)
+    assert "no station measured it" in weather.text
 
 
 def test_one_shipped_case_compares_a_refrigerant_that_cannot_condense():
