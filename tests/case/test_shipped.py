@@ -90,7 +90,7 @@ def test_the_first_plant_is_the_documented_one():
 
 
 def test_the_first_plant_shows_a_whole_year_with_nothing_assumed():
-    """The harbour market states its year, emissions, money, options and widths, and says that its prices are invented."""
+    """The harbour market states its year, emissions, money, options and widths; its prices are invented and say so."""
     path = next(path for path in CASES if path.stem == "harbour-market")
     case = read_case(path)
 
