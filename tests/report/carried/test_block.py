@@ -80,7 +80,7 @@ def test_the_weather_of_a_year_travels_with_the_case(made_at, tmp_path, written)
     from retrofit.study import compare
 
     weather = "hour,dry_bulb [degC]\n" + "".join(f"{hour},{hour % 24}\n" for hour in range(1, 8761))
-    text = (ROOT / "cases" / "office-chiller.toml").read_text(encoding="utf-8")
+    text = (ROOT / "cases" / "process-chiller.toml").read_text(encoding="utf-8")
     (tmp_path / "data").mkdir()
     (tmp_path / "data" / "coast.csv").write_text(weather, encoding="utf-8")
     (tmp_path / "plant.toml").write_text(text + '\n[year]\nweather = "./data/coast.csv"\n', encoding="utf-8")
