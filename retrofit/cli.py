@@ -301,6 +301,44 @@ def _write_case(kept: Carried, case_file: Path, force: bool) -> None:
 
 
 @main.command()
+@click.argument("case_file", type=CASE, metavar="CASE")
+@click.argument("refrigerant", metavar="REFRIGERANT")
+@click.option("-o", "--output", type=CASE, help="File to write; the case's name and the refrigerant if left out.")
+@click.option("--inlet", metavar="TEMPERATURE", help='Air or water at the condenser on the day, such as "27 degC".')
+@units_option
+@click.option("--templates", type=CASE, help="Folder of your own templates, laid over the built-in ones.")
+@on_option
+@_guarded
+def commission(
+    case_file: Path,
+    refrigerant: str,
+    output: Path | None,
+    inlet: str | None,
+    units: str,
+    templates: Path | None,
+    on: datetime | None,
+) -> None:
+    """Write job card and commissioning sheet of the change of a CASE to one REFRIGERANT as one HTML file."""
+    from retrofit.refrigerants import find
+    from retrofit.report import render_site_copy, write_report
+    from retrofit.units import parse_quantity
+
+    name = find(refrigerant).designation
+    T_inlet_K = None if inlet is None else parse_quantity(inlet, "temperature")
+    html = render_site_copy(
+        _compared(case_file, on),
+        name,
+        units,
+        templates,
+        made_at=datetime.now().astimezone(),
+        T_inlet_today_K=T_inlet_K,
+    )
+    path = output or Path(f"{case_file.stem}-{name}.html")
+    write_report(path, html)
+    click.echo(f"Wrote {path}. Print it from a browser and take it to the plant.")
+
+
+@main.command()
 @click.argument("names", nargs=-1, metavar="[NAME]...")
 @json_option
 @_guarded

@@ -34,7 +34,8 @@ def chosen_for_cards(comparison: Comparison) -> Chosen:
     Args:
         comparison: An assessed result.
     """
-    named = getattr(getattr(comparison.case, "report", None), "recommended", None)
+    report = comparison.case.report
+    named = report.recommended if report else None
     if named:
         found = [entry for entry in comparison.candidates if entry.refrigerant.designation == named]
         why = f"The case recommends {named}" + ("." if found else ", which is no conversion to one of its candidates.")

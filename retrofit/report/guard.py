@@ -17,6 +17,7 @@ from retrofit.errors import ReportError
 
 if TYPE_CHECKING:
     from retrofit.report.page import Page
+    from retrofit.report.site_copy import SiteCopy
 
 # What a browser may do with a report: show it, with the styles and pictures that are in it.
 BLOCK_ID = "cautions"
@@ -37,7 +38,7 @@ REACHING = re.compile(
 )
 
 
-def check_page(html: str, page: Page, cautions: str) -> None:
+def check_page(html: str, page: Page | SiteCopy, cautions: str) -> None:
     """Refuse a page that has lost or hidden its cautions, or that would load or run something.
 
     Args:
@@ -63,7 +64,7 @@ def check_page(html: str, page: Page, cautions: str) -> None:
     _check_styles(reader.styles, reader.around)
 
 
-def _check_words(seen: str, page: Page) -> None:
+def _check_words(seen: str, page: Page | SiteCopy) -> None:
     wanted = [page.deference]
     wanted += [text for g in page.cautions for item in g.items for text in (item.caution.title, item.caution.text)]
     for text in wanted:

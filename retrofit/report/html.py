@@ -38,6 +38,40 @@ def render_html(
     return html
 
 
+def render_site_copy(
+    comparison: Comparison,
+    refrigerant: str,
+    units: str = "si",
+    template_folder: Path | None = None,
+    *,
+    made_at: datetime,
+    T_inlet_today_K: float | None = None,
+) -> str:
+    """Return job card and commissioning sheet of one candidate as one HTML page that loads nothing.
+
+    Args:
+        comparison: An assessed result.
+        refrigerant: The candidate. [-]
+        units: "si" or "ip". [-]
+        template_folder: The reader's own templates, laid over those of the package; None for none. [-]
+        made_at: The time to print. [-]
+        T_inlet_today_K: Temperature at the inlet of the condenser on the day, None if not known. [K]
+    Returns: The page. [-]
+    Raises: UnknownRefrigerantError; ReportError for a refrigerant that is no candidate, or as `render_html`.
+    """
+    from retrofit.report.guard import check_page
+    from retrofit.report.site_copy import build_site_copy, candidate_named
+    from retrofit.report.templates import render_cautions, render_page
+    from retrofit.units import UNIT_SYSTEMS
+
+    entry = candidate_named(comparison, refrigerant)
+    page = build_site_copy(comparison, entry, UNIT_SYSTEMS[units], made_at, T_inlet_today_K)
+    cautions = render_cautions(page)
+    html = render_page(page, cautions, template_folder)
+    check_page(html, page, cautions)
+    return html
+
+
 def write_report(path: str | os.PathLike[str], html: str) -> None:
     """Write a report so that the file is either the whole new one or what it was before.
 

@@ -6,11 +6,14 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 from datetime import datetime
 from pathlib import PurePath
+from typing import ClassVar
 
 from retrofit import figures
 from retrofit.case import Case
 from retrofit.checks import answer, model_band, not_checked
+from retrofit.checks.changeover import chosen_for_cards
 from retrofit.report.cautioning import DEFERENCE, CautionGroup, caution_groups
+from retrofit.report.commissioning import Sheet, sheet
 from retrofit.report.comparing import comparison_table, convention
 from retrofit.report.found import AsFound, as_found
 from retrofit.report.front import Front, front, plain
@@ -20,6 +23,7 @@ from retrofit.report.inputs import Input, LeftOut, Taken, defaults, fixed, input
 from retrofit.report.judging import Judged, Shared, judged, spelled, threshold_sources
 from retrofit.report.law import LawPart, law_part
 from retrofit.report.plant import WHY_SAME_COOLING, has_plant
+from retrofit.report.practice import Method, jobs, method
 from retrofit.report.provenance import Traced, traced_values
 from retrofit.report.room import RoomPart, room_part
 from retrofit.report.sections import Place, annex, main_part
@@ -58,6 +62,8 @@ class Graded:
 class Page:
     """Everything a template shows."""
 
+    template: ClassVar[str] = "report.html"
+
     policy: str
     title: str
     title_css: str
@@ -90,6 +96,8 @@ class Page:
     hardware: Hardware
     room: RoomPart | None
     law: LawPart | None
+    method: Method
+    commissioning: tuple[Sheet, ...]
     portraits: tuple[Portrait, ...]
     inputs: tuple[Input, ...]
     defaults: tuple[Taken, ...]
@@ -117,6 +125,8 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
     (existing, *candidates), shared = judged(comparison)
     solved = any(entry.duty is not None for entry in comparison.entries)
     main, detail = main_part(comparison), annex(comparison)
+    chosen = chosen_for_cards(comparison)
+    changes = jobs(comparison, chosen, units)
     return Page(
         policy=POLICY,
         title=plain(case.title),
@@ -124,7 +134,7 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
         about=plain(case.about or ""),
         facts=_facts(comparison, units),
         units=SYSTEM_WORDS[units.name],
-        made_at=_time(made_at),
+        made_at=time_text(made_at),
         case_file=plain(PurePath(case.path).name),
         versions=tuple(comparison.versions.items()),
         main=main,
@@ -150,6 +160,8 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
         hardware=hardware(comparison, units),
         room=room_part(comparison, units),
         law=law_part(comparison, units),
+        method=method(comparison, chosen, changes, units),
+        commissioning=tuple(sheet(job) for job in changes),
         portraits=portraits(comparison, units),
         inputs=inputs(case, units),
         defaults=defaults(case, units),
@@ -232,7 +244,8 @@ def _graded(entry: Entry, units: UnitSystem) -> Graded:
     return Graded(name, grade.word, bubble, dew, pairs or "none", end)
 
 
-def _time(made_at: datetime) -> str:
+def time_text(made_at: datetime) -> str:
+    """Return a time as the report prints it."""
     months = "January February March April May June July August September October November December".split()
     zone = f" {made_at.tzname()}" if made_at.tzinfo else ""
     return f"{made_at.day} {months[made_at.month - 1]} {made_at.year}, {made_at:%H:%M}{zone}"

@@ -17,6 +17,7 @@ if TYPE_CHECKING:
     from markupsafe import Markup
 
     from retrofit.report.page import Page
+    from retrofit.report.site_copy import SiteCopy
 
 PAGE, CAUTIONS = "report.html", "cautions.html"
 FOLDER = "report_templates"
@@ -34,14 +35,14 @@ def built_in_folder() -> Path:
     raise ReportError(f"the templates of the report are missing: no {FOLDER}/{PAGE}; install the package again")
 
 
-def render_cautions(page: Page) -> Markup:
+def render_cautions(page: Page | SiteCopy) -> Markup:
     """Return the block of cautions, from the built-in template alone."""
     from markupsafe import Markup
 
     return Markup(_environment(None).get_template(CAUTIONS).render(page=page))
 
 
-def render_page(page: Page, cautions: Markup, template_folder: Path | None) -> str:
+def render_page(page: Page | SiteCopy, cautions: Markup, template_folder: Path | None) -> str:
     """Return the page.
 
     Args:
@@ -58,7 +59,7 @@ def render_page(page: Page, cautions: Markup, template_folder: Path | None) -> s
     return _with_own_templates(page, cautions, template_folder)
 
 
-def _with_own_templates(page: Page, cautions: Markup, folder: Path) -> str:
+def _with_own_templates(page: Page | SiteCopy, cautions: Markup, folder: Path) -> str:
     from jinja2 import TemplateError
 
     try:
@@ -75,8 +76,8 @@ def _with_own_templates(page: Page, cautions: Markup, folder: Path) -> str:
         raise ReportError(f"{_where(error, folder)}: {shown(str(error), 300)}; correct the template") from error
 
 
-def _filled(folder: Path | None, page: Page, cautions: Markup) -> str:
-    return str(_environment(folder).get_template(PAGE).render(page=page, cautions=cautions))
+def _filled(folder: Path | None, page: Page | SiteCopy, cautions: Markup) -> str:
+    return str(_environment(folder).get_template(page.template).render(page=page, cautions=cautions))
 
 
 def _environment(folder: Path | None) -> Any:

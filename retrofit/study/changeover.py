@@ -9,12 +9,15 @@ import numpy as np
 
 from retrofit.case import Case
 from retrofit.cycle import pressure_at_mean
+from retrofit.equipment.balance import balance
 from retrofit.equipment.oil import changes_needed
 from retrofit.equipment.vessels import co2_equivalent_t, cylinders_needed, vessel_fill
 from retrofit.errors import NoSolutionError, OutsideValidRangeError, RetrofitError
 from retrofit.properties import Fluid, fluid
 from retrofit.study.hardware.numbers import HardwareNumbers
-from retrofit.study.installed import ExistingPlant, run_at_condenser_inlet
+from retrofit.study.installed import ExistingPlant, machine_at
+from retrofit.study.operating import balanced
+from retrofit.study.performance import as_numbers
 from retrofit.study.practice import practice
 from retrofit.study.result import Comparison, Entry, Performance
 from retrofit.study.saturation import saturation_table
@@ -22,7 +25,6 @@ from retrofit.study.today import today_of
 
 KELVIN = 273.15
 LITRE_M3 = 1e-3
-HIGHEST_RISE_K = 40.0  # above the design point: how warm the condenser is tried to lift a plant to its head pressure
 CLOSE_K = 0.01
 SAME_DAY_K = 0.05
 WITHOUT_LAW = ("gwp_100yr_ar4", "gwp_100yr_ar6")
@@ -236,8 +238,9 @@ def _weights(entry: Entry) -> tuple[Weight, ...]:
 
 def _weight(entry: Entry, basis: str, charge_kg: float | None) -> Weight:
     gwp = getattr(entry.refrigerant, basis).number
-    known = gwp is not None and charge_kg is not None
-    return Weight(basis, gwp, float(co2_equivalent_t(charge_kg, gwp)) if known else None)
+    if gwp is None or charge_kg is None:
+        return Weight(basis, gwp, None)
+    return Weight(basis, gwp, float(co2_equivalent_t(charge_kg, gwp)))
 
 
 # -- what the gauges should show ---------------------------------------------------------------------
@@ -258,31 +261,21 @@ def _expected(
     except RetrofitError as error:
         return (), error.message
     assert site.plant is not None, "the basis says that the plant balances"
-    asked = _Asked(site.plant, behaviour, numbers, bands)
-    return tuple(_at(asked, name, T_K) for name, T_K in _inlets(case, T_today_K)), ""
+    try:
+        held = _held_dew_K(numbers, behaviour)
+    except (NoSolutionError, OutsideValidRangeError) as error:
+        return (), error.message
+    return _at_inlets(site.plant, behaviour, numbers, bands, held, _inlets(case, T_today_K)), ""
 
 
-@dataclass(frozen=True)
-class _Asked:
-    """A plant with a refrigerant, ready to be asked about one condition after another."""
-
-    plant: ExistingPlant
-    behaviour: Fluid
-    numbers: HardwareNumbers
-    bands: Bands
-
-    def at(self, T_K: float) -> Performance[float]:
-        return run_at_condenser_inlet(self.plant, self.behaviour, T_K)
-
-    @property
-    def head_pressure_Pa(self) -> float:
-        """Return the pressure that the control of head pressure holds with the new refrigerant, 0 without one."""
-        held = next((item for item in self.numbers.settings if item.key == "head_pressure"), None)
-        if held is None:
-            return 0.0
-        if held.p_Pa.new is None:
-            raise NoSolutionError(f"what the control of head pressure holds is not known: {held.reason}")
-        return held.p_Pa.new
+def _held_dew_K(numbers: HardwareNumbers, behaviour: Fluid) -> float:
+    """Return the condensing dew temperature that the control of head pressure holds at least. [K]"""
+    held = next((item for item in numbers.settings if item.key == "head_pressure"), None)
+    if held is None:
+        return -np.inf
+    if held.p_Pa.new is None:
+        raise NoSolutionError(f"what the control of head pressure holds is not known: {held.reason}")
+    return float(behaviour.dew(held.p_Pa.new).T_K)
 
 
 def _inlets(case: Case, T_today_K: float | None) -> list[tuple[str, float]]:
@@ -300,38 +293,37 @@ def _inlets(case: Case, T_today_K: float | None) -> list[tuple[str, float]]:
     return found + ([("today", T_today_K)] if T_today_K is not None else [])
 
 
-def _at(asked: _Asked, name: str, T_K: float) -> Expected:
-    try:
-        found, held = asked.at(T_K), asked.head_pressure_Pa
-        if found.p_cond_Pa >= held:
-            return _windows(asked, name, T_K, found)
-        warmer = asked.at(_inlet_at_pressure(asked, T_K, held))
-    except (NoSolutionError, OutsideValidRangeError) as error:
-        return Expected(name, T_K, reason=error.message)
-    return replace(_windows(asked, name, T_K, warmer), is_held=True)
+def _at_inlets(
+    plant: ExistingPlant,
+    behaviour: Fluid,
+    numbers: HardwareNumbers,
+    bands: Bands,
+    held_dew_K: float,
+    inlets: Sequence[tuple[str, float]],
+) -> tuple[Expected, ...]:
+    """Return what is expected at every condenser inlet, the plant balanced at all of them together."""
+    T_in = np.array([T_K for _, T_K in inlets])
+    machine, starts = machine_at(plant, behaviour, np.asarray(plant.machine.evaporator.secondary.T_in_K), T_in)
+    found = balance(
+        behaviour, replace(machine, T_cond_lowest_K=held_dew_K), starts[0], np.maximum(starts[1], held_dew_K)
+    )
+    every = balanced(found)
+    expected = []
+    for place, (name, T_K) in enumerate(inlets):
+        if found.reason[place]:
+            expected.append(Expected(name, T_K, reason=str(found.reason[place])))
+            continue
+        one = as_numbers(every, place)
+        is_held = one.T_cond_dew_K <= held_dew_K + CLOSE_K
+        expected.append(replace(_windows(numbers, bands, name, T_K, one), is_held=is_held))
+    return tuple(expected)
 
 
-def _inlet_at_pressure(asked: _Asked, T_K: float, p_Pa: float) -> float:
-    """Return the inlet temperature at which the plant condenses at a pressure by itself. [K]
-
-    A control that throttles the condenser leaves the compressor the same pressures as a warmer day would.
-    """
-    from scipy.optimize import brentq
-
-    def short(inlet_K: float) -> float:
-        return asked.at(inlet_K).p_cond_Pa / p_Pa - 1.0
-
-    top = T_K + HIGHEST_RISE_K
-    if short(top) < 0.0:
-        raise NoSolutionError("the control of head pressure holds more than the plant reaches: check `head_pressure`")
-    return float(brentq(short, T_K, top, xtol=CLOSE_K))
-
-
-def _windows(asked: _Asked, name: str, T_K: float, found: Performance[float]) -> Expected:
+def _windows(numbers: HardwareNumbers, bands: Bands, name: str, T_K: float, found: Performance[float]) -> Expected:
     """Return what is expected, each number widened by its band."""
-    bands, design, at_design = asked.bands, asked.numbers.new.design, asked.numbers.current_A.new
+    at_design = numbers.current_A.new
     # Motor current goes with power, as everywhere in the hardware.
-    current = None if at_design is None else at_design * found.power_W / design.power_W
+    current = None if at_design is None else at_design * found.power_W / numbers.new.design.power_W
     return Expected(
         name,
         T_K,

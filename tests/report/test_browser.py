@@ -7,6 +7,7 @@ import pytest
 
 from retrofit.case import read_case
 from retrofit.checks import assess
+from retrofit.checks.changeover import chosen_for_cards
 from retrofit.report import render_html
 from retrofit.study import compare
 
@@ -16,9 +17,11 @@ SHOWN = ["harbour-market", "freezer-store", "coast-heat-pump"]
 HEADINGS = [
     "Summary", "Options considered, and what is rejected", "Cautions by safety class", "The plant as found",
     "What the law asks, and when", "Comparison on three bases", "Charts", "Hardware, component by component",
-    "Charge against the room", "Assumptions", "Limits: what was not checked", "Sign-off and revisions",
+    "Charge against the room", "Method statement and way back", "Assumptions", "Limits: what was not checked",
+    "Sign-off and revisions",
     "Findings and verdict for each refrigerant", "Components, one by one", "Charge and room: the working",
-    "Law: row by row", "State points, and how to check them by hand", "Inputs: values the case gives",
+    "Law: row by row", "State points, and how to check them by hand", "Commissioning sheets",
+    "Inputs: values the case gives",
     "How far the model can be trusted", "Terms", "Sources",
 ]  # fmt: skip
 
@@ -139,7 +142,9 @@ def test_it_prints_on_either_paper(name, format_, opened, assessed):
     width, height = map(float, re.search(rb"/MediaBox\s*\[0 0 ([0-9.]+) ([0-9.]+)\]", pdf).groups())
     refrigerants = len(assessed(name).entries)
 
-    assert refrigerants + 6 <= count <= 2 * refrigerants + 34
+    cards = len(chosen_for_cards(assessed(name)).entries)  # two pages for each job card, two for each sheet
+
+    assert refrigerants + 6 + 4 * cards <= count <= 2 * refrigerants + 34 + 4 * cards + 4
     assert (width, height) == pytest.approx({"A4": (595.0, 842.0), "Letter": (612.0, 792.0)}[format_], abs=1.5)
 
 

@@ -1,0 +1,242 @@
+"""Job card and commissioning sheet on the page: numbers of the result, blanks for the rest, hostile text, units."""
+
+import re
+from dataclasses import replace
+
+import pytest
+
+from retrofit.checks import assess
+from retrofit.checks.changeover import chosen_for_cards
+from retrofit.errors import ReportError
+from retrofit.report import render_html, render_site_copy
+from retrofit.study import compare
+from retrofit.study.changeover import pressure_rows
+
+KELVIN = 273.15
+BAR_PA, PSI_PA, POUND_KG = 1e5, 6894.757293168, 0.45359237  # NIST Special Publication 811 (2008), appendix B
+
+
+def number(text):
+    """Return the number of a cell."""
+    return float(re.sub(r"[\s\u202f]", "", text).replace("−", "-"))
+
+
+def number_in_K(text, units):
+    """Return a temperature of a cell in kelvin."""
+    value = number(text)
+    return value + KELVIN if units == "si" else (value + 459.67) / 1.8
+
+
+@pytest.fixture(scope="module")
+def market(assessed):
+    """Return the harbour market's result."""
+    return assessed("harbour-market")
+
+
+@pytest.fixture(scope="module")
+def copies(market, made_at):
+    """Return the site copy of R-448A at the harbour market, in both unit systems."""
+    return {
+        units: render_site_copy(market, "r-448a", units, made_at=made_at, T_inlet_today_K=300.15)
+        for units in ("si", "ip")
+    }
+
+
+def test_cards_and_sheets_are_for_the_same_candidates(market, page_of, read_page):
+    """One card and one sheet for each candidate chosen, and every other named with its reason."""
+    page, chosen = read_page(page_of("harbour-market", "si")), chosen_for_cards(market)
+    keys = [entry.refrigerant.designation for entry in chosen.entries]
+
+    assert [name for name in page.ids if name.startswith("t-card-")] == [f"t-card-{key}" for key in keys]
+    assert [name for name in page.ids if name.startswith("t-readings-")] == [f"t-readings-{key}" for key in keys]
+    assert len(set(page.ids)) == len(page.ids)
+    told = " ".join(page.text.split())
+    for entry, _ in chosen.left_out:
+        assert f"{entry.refrigerant.display_name}, " in told.split("No job card: ")[1]
+
+
+@pytest.mark.parametrize(("units", "to_Pa"), [("si", BAR_PA), ("ip", PSI_PA)])
+def test_the_table_of_pressures_reads_back(units, to_Pa, copies, market, read_page):
+    """Each row is the refrigerant's pressures at its temperature, gauge, to half the last digit shown."""
+    page, ambient = read_page(copies[units]), market.case.plant.ambient_pressure_Pa
+    rows = [row for key, rows in page.tables.items() if str(key).startswith("t-pt-") for row in rows[1:]]
+    found = pressure_rows("R448A", [number_in_K(row[0], units) for row in rows])
+    half = 0.501 * {"si": 0.01, "ip": 0.1}[units] * to_Pa
+
+    assert 40 <= len(rows) <= 96
+    for row, pressures in zip(rows, found, strict=True):
+        wanted = pressures.p_bubble_Pa, pressures.p_mean_Pa, pressures.p_dew_Pa
+        for text, p_Pa in zip(row[1:], wanted, strict=True):
+            assert number(text) * to_Pa == pytest.approx(p_Pa - ambient, abs=half)
+
+
+def test_the_design_point_is_framed_where_a_gauge_reads_it(copies, market):
+    """The dew cell nearest to evaporating, the bubble and mean cells nearest to condensing, and no more."""
+    design = market.candidates[0].hardware_numbers.new.design
+    framed = re.findall(r'<th scope="row">([−\d]+)</th>(?:<td>[^<]*</td>)*<td class="target">', copies["si"])
+    wanted = [design.T_evap_dew_K, design.T_cond_bubble_K, design.T_cond_mean_K]
+
+    assert copies["si"].count('class="target"') == 3
+    assert sorted(number(text) for text in framed) == sorted(round(T - KELVIN) for T in wanted)
+
+
+def test_a_pure_refrigerant_has_one_column(case_with, made_at, read_page):
+    """R-134a has no glide: one pressure, and both ends of the cycle framed."""
+    result = assess(compare(case_with("R404A", ("R134a",))))
+    html = render_site_copy(result, "R134a", made_at=made_at)
+
+    assert read_page(html).tables["t-pt-R134a-1"][0] == ["°C", "Pressure"]
+    assert html.count('class="target"') == 2
+
+
+def test_expected_readings_read_back(copies, market, read_page):
+    """The design column holds the design point of the result, and the day asked for has a column of its own."""
+    rows, full = read_page(copies["si"]).tables["t-expected-R448A"], market.candidates[0].plant.full
+    headings, cells = rows[0][2:], {row[0]: row[2:] for row in rows[1:]}
+
+    assert headings == ["22 °C milder", "32 °C design point", "37 °C hotter", "27 °C on the day"]
+    low, high = map(number, cells["Discharge (condensing)"][1].split(" to "))
+    assert low < (full.p_cond_Pa - market.case.plant.ambient_pressure_Pa) / BAR_PA < high
+    low, high = map(number, cells["Discharge line"][1].split(" to "))
+    assert (low, high) == pytest.approx((full.T_discharge_K - KELVIN - 8.0, full.T_discharge_K - KELVIN + 8.0), abs=0.5)
+
+
+def test_without_exchangers_it_says_that_nothing_is_expected(assessed, made_at, read_page):
+    """The ice rink's case has no condenser: no windows, and the reason."""
+    page = read_page(render_site_copy(assessed("ice-rink"), "R507A", made_at=made_at))
+
+    assert not [key for key in page.tables if str(key).startswith("t-expected")]
+    assert "Expected readings are not computed: [condenser]" in " ".join(page.text.split())
+
+
+@pytest.mark.parametrize(("units", "to_kg", "label"), [("si", 1.0, "kg"), ("ip", POUND_KG, "lb")])
+def test_charge_and_cylinders_in_both_systems(units, to_kg, label, copies, market, read_page):
+    """Charge expected and the first 85 to 90 % of it; 260 kg of R-404A fill 7 cylinders of 60 l, in either unit.
+
+    By hand: liquid R-404A at 50 degC has about 899 kg/m3 (property library), 0.8 of 60 l take 43 kg; 260 / 43 = 6.03.
+    """
+    page, filling = read_page(copies[units]), market.candidates[0].hardware_numbers.filling
+    rows = {row[0]: row[1] for row in page.tables["t-charge-R448A"]}
+    first = [number(text) for text in re.findall(r"[\d.]+", rows["First, 85 % to 90 %"])]
+
+    assert number(rows["Expected"].split(label)[0]) * to_kg == pytest.approx(filling.expected_kg, abs=0.06)
+    assert [mass * to_kg for mass in first] == pytest.approx(
+        [0.85 * filling.expected_kg, 0.9 * filling.expected_kg], abs=0.06
+    )
+    size = {"si": r"60 l", "ip": r"132\.3 lb of water capacity"}[units]
+    assert re.search(rf"7 of {size}", " ".join(page.text.split()))
+
+
+def test_what_is_not_known_is_a_blank_marked_unknown(case_with, made_at, read_page):
+    """A case without charge, plates and settings gives a card that asks for them instead of numbers."""
+    result = assess(compare(case_with()))
+    page = read_page(render_site_copy(result, "R448A", made_at=made_at))
+    steps = {row[0]: row[1] for row in page.tables["t-card-R448A"]}
+
+    assert "Expected: unknown, fill in." in steps["4"]
+    assert "low side unknown, fill in, high side unknown, fill in" in steps["7"]
+    assert "unknown, fill in first" in steps["9"]
+    assert all(row[2:] == ["", "", ""] for row in page.tables["t-changes-R448A"][1:])
+
+
+def test_set_points_are_those_of_the_hardware(case_with, made_at, read_page):
+    """Old and new of each set point given stand there as gauges show them; the others are blank."""
+    controls = {"low_pressure_cut_out": "0.5 bar g", "head_pressure": "14 bar g", "high_pressure_cut_out": "25 bar g"}
+    result = assess(compare(case_with(controls=controls)))
+    rows = read_page(render_site_copy(result, "R448A", made_at=made_at)).tables["t-changes-R448A"]
+    shown = {row[0]: row[2:4] for row in rows[1:]}
+
+    assert shown["High-pressure switch, cut-out"] == ["25.00", ""]
+    for item in result.candidates[0].hardware_numbers.settings:
+        new = item.p_Pa.new - 101_325.0
+        assert number(shown[item.name][0]) * BAR_PA == pytest.approx(item.p_Pa.old - 101_325.0, abs=501.0)
+        assert number(shown[item.name][1]) * BAR_PA == pytest.approx(new, abs=501.0)
+    assert shown["Evaporator pressure regulator"] == ["", ""]
+
+
+def test_every_part_to_replace_or_to_find_out_is_on_the_card(copies, market, read_page):
+    """No row of the hardware table that asks for work or for a datum is lost on the way to the technician."""
+    text = " ".join(read_page(copies["si"]).text.split())
+    rows = [row for row in market.candidates[0].hardware if row.verdict != "keep" and row.code != "charge"]
+
+    assert len(rows) > 10
+    assert [row.code for row in rows if f"{row.name}: {row.verdict}." not in text] == []
+
+
+def test_a_stop_stands_above_the_first_step(market, made_at):
+    """A card asked for against a stop begins with it."""
+    html = render_site_copy(market, "R454C", made_at=made_at)
+    card = html.split('id="card-R454C"')[1]
+    stops = [item for item in market.candidates[-1].findings if item.level == "stop"]
+
+    assert stops
+    assert card.index("Nothing begins before this is settled in writing") < card.index('id="t-card-R454C"')
+
+
+def test_the_one_recommended_is_the_only_card(case_with, made_at, read_page):
+    """With a recommendation in the case the report has one card, and says whose it is."""
+    result = assess(compare(case_with(candidates=("R448A", "R407A"), report={"recommended": "R407A"})))
+    page = read_page(render_html(result, made_at=made_at))
+
+    assert [name for name in page.ids if name.startswith("t-card-")] == ["t-card-R407A"]
+    assert "The case recommends R-407A." in page.text
+
+
+def test_nothing_to_convert_gives_no_card_but_says_why(assessed, page_of, read_page):
+    """Every candidate for the heat pump is stopped: no card, no sheet, and each with its reason."""
+    page = read_page(page_of("coast-heat-pump", "si"))
+
+    assert not [name for name in page.ids if name.startswith(("t-card-", "t-readings-"))]
+    assert "None: no candidate has a job card." in page.text
+    assert page.text.count("stopped by: ") == len(assessed("coast-heat-pump").candidates)
+
+
+HOSTILE = [
+    "<script>alert(1)</script>",
+    "</style><style>#cautions{display:none}",
+    "{{ 7 * 7 }}",
+    "a\u202eb\x1b[31m",
+    "x" * 400,
+]
+
+
+@pytest.mark.parametrize("text", HOSTILE, ids=["script", "style", "template", "hidden", "long"])
+def test_a_hostile_title_is_only_text_on_the_site_copy(text, market, copies, made_at, read_page):
+    """The copy has no element more than with another title, and what commands is written out."""
+    case = replace(market.case, title=text, path=f"{text.replace('/', '')}.toml")
+    html = render_site_copy(replace(market, case=case), "R448A", made_at=made_at, T_inlet_today_K=300.15)
+    page = read_page(html)
+
+    assert [tag for tag, _ in page.elements] == [tag for tag, _ in read_page(copies["si"]).elements]
+    assert not set(html) & {"\x1b", "\u202e"}
+    assert page.headings[0] == text.encode("ascii", "backslashreplace").decode().replace("\x1b", "\\x1b")
+
+
+def test_the_site_copy_carries_the_cautions_of_both_refrigerants(market, copies):
+    """What stands in the report on both refrigerants stands here too, and own templates cannot leave it out."""
+    entries = (market.existing, market.candidates[0])
+
+    for text in {caution.text for entry in entries for caution in entry.cautions}:
+        assert text in " ".join(copies["ip"].replace("&#39;", "'").split())
+
+
+def test_own_templates_cannot_take_the_cautions_from_the_site_copy(market, made_at, tmp_path):
+    """A template of the reader without the block is refused."""
+    (tmp_path / "commission.html").write_text("<p>{{ page.title }}</p>", encoding="utf-8")
+
+    with pytest.raises(ReportError, match="cautions"):
+        render_site_copy(market, "R448A", template_folder=tmp_path, made_at=made_at)
+
+
+def test_a_refrigerant_that_is_no_candidate_is_named(market, made_at):
+    """The message lists the candidates of the case."""
+    with pytest.raises(ReportError, match=r"R22 is no candidate of this case; its candidates are R448A, .* and R454C"):
+        render_site_copy(market, "R22", made_at=made_at)
+
+
+def test_a_report_without_numbers_still_has_its_method(case_of, made_at):
+    """A plant whose own refrigerant cannot be computed has no card, and its report is whole."""
+    html = render_html(assess(compare(case_of(existing="R744", candidates=("R448A",)))), made_at=made_at)
+
+    assert 'id="method"' in html
+    assert "not computed: " in html
