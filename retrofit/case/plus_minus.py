@@ -14,7 +14,12 @@ from retrofit.case.table import Table
 class PlusMinus(Table):
     """Half the width within which an input lies, under its own name: `duty.evaporating = "1 K"`."""
 
-    model_config = ConfigDict(frozen=True, extra="allow", defer_build=True)
+    model_config = ConfigDict(
+        frozen=True,
+        extra="allow",
+        defer_build=True,
+        json_schema_extra={"additionalProperties": {"type": ["string", "number", "object"]}},
+    )
     __pydantic_extra__: dict[str, Any]
 
     @property

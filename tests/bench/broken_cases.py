@@ -16,6 +16,7 @@ from __future__ import annotations
 import argparse
 import random
 import re
+import shutil
 import subprocess
 import sys
 import tempfile
@@ -307,6 +308,8 @@ def main() -> int:
     counts: Counter[str] = Counter()
     start = time.perf_counter()
     with tempfile.TemporaryDirectory() as folder:
+        for hours in (TOP / "cases").glob("*.csv"):
+            shutil.copy(hours, folder)
         for number in range(asked.count):
             path = Path(folder) / f"case-{number}.toml"
             data = broken_case(shipped, draw)
