@@ -7,21 +7,19 @@ from retrofit.checks.advice import Advice, advice, deed
 from retrofit.checks.answer import Answer, Matter, answer
 from retrofit.checks.assess import LEVELS, VERDICTS, assess, verdict
 from retrofit.checks.limits import not_checked
-from retrofit.checks.thresholds import Band, Threshold, model_band, threshold, thresholds_for
+from retrofit.checks.thresholds import Threshold, threshold, thresholds_for
 
 __all__ = [
     "LEVELS",
     "VERDICTS",
     "Advice",
     "Answer",
-    "Band",
     "Matter",
     "Threshold",
     "advice",
     "answer",
     "assess",
     "deed",
-    "model_band",
     "not_checked",
     "threshold",
     "thresholds_for",

@@ -13,8 +13,8 @@ from dataclasses import dataclass
 
 from retrofit.case import Report
 from retrofit.checks.gates import cooling_reached
-from retrofit.checks.thresholds import model_band
 from retrofit.study import Comparison, Entry, Finding
+from retrofit.study.bands import model_band, pair_band
 from retrofit.units import UnitSystem, listed
 
 GRAVE = ("danger", "warning", "unknown")  # levels of cautions that page one names
@@ -245,18 +245,19 @@ def _speaks_for(comparison: Comparison, entry: Entry, units: UnitSystem) -> Iter
     """Yield what is better than today, or as needed, beyond what the model cannot tell apart."""
     if entry.status != "ok":
         return
-    band, reached = model_band(), cooling_reached(comparison, entry)
+    reached = cooling_reached(comparison, entry)
+    band = {name: pair_band(comparison.existing, entry, name) for name in model_band()}
     if reached is not None:
         share = reached[0] / reached[1]
-        if share > 1.0 + band["capacity"].value:
+        if share > 1.0 + band["capacity"]:
             yield "cools more than needed"
         elif share >= 1.0:
             yield "cools as much as needed"
     cop = entry.relative.get("cop")
-    if cop is not None and cop > 1.0 + band["cop"].value:
+    if cop is not None and cop > 1.0 + band["cop"]:
         yield f"COP {cop - 1.0:+.0%} at the same duty"
     cooler = entry.T_discharge_difference_K
-    if cooler is not None and cooler < -band["T_discharge"].value:
+    if cooler is not None and cooler < -band["T_discharge"]:
         by = units.with_unit("temperature difference", -cooler, decimals=0)
         yield f"discharge {by} cooler"
     old, new = (item.refrigerant.gwp_100yr_ar4.number for item in (comparison.existing, entry))

@@ -6,8 +6,8 @@ from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 
 from retrofit.checks.gates import capacity_needed_W
-from retrofit.checks.thresholds import model_band
 from retrofit.study import Comparison, Entry
+from retrofit.study.bands import groups_alike, on_the_plant, pair_band
 from retrofit.units import UnitSystem, listed
 
 VERDICT_WORDS = {
@@ -45,7 +45,7 @@ class Answer:
     Attributes:
         question: The question the case asks.
         headline: The answer in one sentence.
-        matters: What stands behind it: capacity, discharge temperature, pressure, COP.
+        matters: What stands behind it: capacity, discharge temperature, pressure, COP, which candidates are alike.
         remarks: Sentences on safety classes and on what could not be computed.
     """
 
@@ -87,10 +87,11 @@ def answer(comparison: Comparison, units: UnitSystem) -> Answer:
 def _matters(comparison: Comparison, solved: Sequence[Entry], units: UnitSystem) -> tuple[Matter, ...]:
     found = (
         _capacity(comparison, solved),
-        _installed(solved, units),
+        _installed(comparison, solved, units),
         _discharge(comparison, solved, units),
         _pressure(comparison, solved, units),
-        _cop(solved),
+        _cop(comparison, solved),
+        _among(solved),
         _hardware(comparison, solved),
     )
     return tuple(matter for matter in found if matter.groups)
@@ -111,8 +112,9 @@ def _headline(comparison: Comparison) -> str:
 
 def _capacity(comparison: Comparison, solved: Sequence[Entry]) -> Matter:
     """Return the matter of cooling: on the plant as installed where that could be computed, and saying which."""
-    old, band = comparison.existing.refrigerant.designation, model_band()["capacity"].value
-    needed = capacity_needed_W(comparison)
+    old, needed = comparison.existing.refrigerant.designation, capacity_needed_W(comparison)
+    held = Held(comparison, solved, "capacity")
+    band, within = held.band, f"{held.narrowest:.0%}"
     is_mixed = len({entry.plant is None for entry in solved}) > 1
 
     def share(entry: Entry) -> float:
@@ -123,12 +125,13 @@ def _capacity(comparison: Comparison, solved: Sequence[Entry]) -> Matter:
 
     def change(entry: Entry) -> str:
         name = "capacity" if entry.plant is None else "plant_capacity"
-        return _percent(entry.relative[name]) + (", same compressor" if is_mixed and entry.plant is None else "")
+        basis = ", same compressor" if is_mixed and entry.plant is None else ""
+        return _percent(entry.relative[name]) + basis + held.own(entry)
 
     groups = (
-        (lambda e: share(e) >= 1.0 + band, f"more than needed, beyond the ±{band:.0%} of the model"),
-        (lambda e: 1.0 - band < share(e) < 1.0 + band, f"as much as needed, within the ±{band:.0%} of the model"),
-        (lambda e: share(e) <= 1.0 - band, f"less than needed, beyond the ±{band:.0%} of the model"),
+        (lambda e: share(e) >= 1.0 + band(e), f"more than needed, beyond the ±{within} of the model"),
+        (lambda e: 1.0 - band(e) < share(e) < 1.0 + band(e), f"as much as needed, within the ±{within} of the model"),
+        (lambda e: share(e) <= 1.0 - band(e), f"less than needed, beyond the ±{within} of the model"),
     )
     basis = (
         "Cooling with the existing compressor"
@@ -144,32 +147,34 @@ def _percent(ratio: float) -> str:
     return "0%" if text[1:] == "0%" else text
 
 
-def _installed(solved: Sequence[Entry], units: UnitSystem) -> Matter:
+def _installed(comparison: Comparison, solved: Sequence[Entry], units: UnitSystem) -> Matter:
     """Return how the plant as installed meets the cooling it has to deliver; no groups without that basis."""
     operations = [entry.plant.operation for entry in solved if entry.plant is not None]
     if not operations:
         return Matter("The plant as installed", ())
-    needed, band = operations[0].cooling_needed_W, model_band()["capacity"].value
+    needed, held = operations[0].cooling_needed_W, Held(comparison, solved, "capacity")
+    band, within = held.band, f"{held.narrowest:.0%}"
 
     def lacks(entry: Entry) -> float:
         return entry.plant.operation.unmet_W / needed if entry.plant else -1.0
 
     groups = (
         (lambda e: lacks(e) == 0.0, "meets it"),
-        (lambda e: 0.0 < lacks(e) <= band, f"lacks less than the ±{band:.0%} of the model, running all the time"),
-        (lambda e: lacks(e) > band, "lacks cooling, running all the time"),
+        (lambda e: 0.0 < lacks(e) <= band(e), f"lacks less than the ±{within} of the model, running all the time"),
+        (lambda e: lacks(e) > band(e), "lacks cooling, running all the time"),
         (lambda e: lacks(e) < 0.0, "not computed on this basis"),
     )
     delivered = units.with_unit("cooling", needed)
     about = f"The plant as installed, {delivered} to deliver; COP against today at the same cooling"
-    return Matter(about, _grouped(solved, groups, _running))
+    return Matter(about, _grouped(solved, groups, lambda entry: _running(comparison, entry)))
 
 
-def _running(entry: Entry) -> str:
+def _running(comparison: Comparison, entry: Entry) -> str:
     """Return how a refrigerant runs in the plant as installed, and its COP there; empty without that basis."""
     if entry.plant is None:
         return ""
-    run, cop, band = entry.plant.operation, entry.relative["plant_cop_same_cooling"], model_band()["cop"].value
+    run, cop = entry.plant.operation, entry.relative["plant_cop_same_cooling"]
+    band = pair_band(comparison.existing, entry, "cop")
     near = "≈\N{NO-BREAK SPACE}" if abs(cop - 1.0) <= band else ""
     share = run.unmet_W / run.cooling_needed_W
     parts = [f"at {run.speed_fraction:.0%} speed"] if run.speed_fraction < 1.0 else []
@@ -212,29 +217,33 @@ def _short(components: Sequence[str]) -> str:
 
 
 def _discharge(comparison: Comparison, solved: Sequence[Entry], units: UnitSystem) -> Matter:
-    band, today = model_band()["T_discharge"].value, comparison.existing.duty
+    held, today = Held(comparison, solved, "T_discharge"), comparison.existing.duty
+    band = held.band
     assert today is not None
 
     def amount(entry: Entry) -> str:
         assert entry.duty is not None
         by = units.with_unit("temperature difference", entry.T_discharge_difference_K, decimals=0, signed=True)
-        return f"{by}, to {units.with_unit('temperature', entry.duty.T_discharge_K, decimals=0)}"
+        to = units.with_unit("temperature", entry.duty.T_discharge_K, decimals=0)
+        return f"{by}, to {to}{held.own(entry, kelvin)}"
+
+    def kelvin(difference_K: float) -> str:
+        return units.with_unit("temperature difference", difference_K, decimals=0)
 
     def rise(entry: Entry) -> float:
         return entry.T_discharge_difference_K or 0.0
 
-    within = units.with_unit("temperature difference", band, decimals=0)
     groups = (
-        (lambda e: rise(e) > band, "hotter"),
-        (lambda e: abs(rise(e)) <= band, f"no meaningful difference (within ±{within})"),
-        (lambda e: rise(e) < -band, "cooler"),
+        (lambda e: rise(e) > band(e), "hotter"),
+        (lambda e: abs(rise(e)) <= band(e), f"no meaningful difference ({held.within(kelvin)})"),
+        (lambda e: rise(e) < -band(e), "cooler"),
     )
     start = units.with_unit("temperature", today.T_discharge_K, decimals=0)
     return Matter(f"Discharge temperature, {start} today", _grouped(solved, groups, amount))
 
 
 def _pressure(comparison: Comparison, solved: Sequence[Entry], units: UnitSystem) -> Matter:
-    band, today = model_band()["pressure"].value, comparison.existing.duty
+    held, today = Held(comparison, solved, "pressure"), comparison.existing.duty
     assert today is not None
     base = today.p_cond_Pa
 
@@ -242,34 +251,42 @@ def _pressure(comparison: Comparison, solved: Sequence[Entry], units: UnitSystem
         assert entry.duty is not None
         by = units.text("gauge pressure", entry.duty.p_cond_Pa - base, decimals=1, signed=True)
         label = units.label("pressure").split()[0].replace("psia", "psi")
-        return f"{by}\N{NO-BREAK SPACE}{label}"
+        return f"{by}\N{NO-BREAK SPACE}{label}{held.own(entry)}"
 
     def ratio(entry: Entry) -> float:
         return entry.relative["p_cond"]
 
-    groups = (
-        (lambda e: ratio(e) > 1.0 + band, "higher"),
-        (lambda e: abs(ratio(e) - 1.0) <= band, f"no meaningful difference (within ±{band:.0%})"),
-        (lambda e: ratio(e) < 1.0 - band, "lower"),
-    )
-    return Matter(f"Condensing pressure, {units.with_unit('pressure', base)} today", _grouped(solved, groups, amount))
+    about = f"Condensing pressure, {units.with_unit('pressure', base)} today"
+    return Matter(about, _grouped(solved, held.groups(ratio), amount))
 
 
-def _cop(solved: Sequence[Entry]) -> Matter:
-    band = model_band()["cop"].value
+def _cop(comparison: Comparison, solved: Sequence[Entry]) -> Matter:
+    held = Held(comparison, solved, "cop")
 
     def change(entry: Entry) -> str:
-        return _percent(entry.relative["cop"])
+        return _percent(entry.relative["cop"]) + held.own(entry)
 
     def ratio(entry: Entry) -> float:
         return entry.relative["cop"]
 
-    groups = (
-        (lambda e: ratio(e) > 1.0 + band, "higher"),
-        (lambda e: abs(ratio(e) - 1.0) <= band, f"no meaningful difference (within ±{band:.0%})"),
-        (lambda e: ratio(e) < 1.0 - band, "lower"),
+    return Matter("COP at the same duty", _grouped(solved, held.groups(ratio), change))
+
+
+def _among(solved: Sequence[Entry]) -> Matter:
+    """Return which candidates show no meaningful difference among themselves in cooling and in COP."""
+    installed = on_the_plant(solved)
+    kinds = (
+        ("capacity", "cooling, same plant" if installed else "cooling, same compressor"),
+        ("cop", "COP, same plant and cooling" if installed else "COP, same duty"),
     )
-    return Matter("COP at the same duty", _grouped(solved, groups, change))
+    found = []
+    for quantity, words in kinds:
+        groups = groups_alike(solved, quantity)
+        names = tuple(" / ".join(entry.refrigerant.designation for entry in group) for group in groups)
+        everyone = tuple(entry.refrigerant.designation for entry in solved)
+        alike, apart = f"no meaningful difference in {words}", f"every two differ in {words}"
+        found.append((alike, names) if names else (apart, everyone))
+    return Matter("Among the candidates", tuple(found) if len(solved) > 1 else ())
 
 
 def _class(comparison: Comparison) -> list[str]:
@@ -286,6 +303,42 @@ def _class(comparison: Comparison) -> list[str]:
         f"{listed(names, 'and')} {verb} of a less mild safety class than the plant was built for ({old}): by default a "
         "new, purpose-built plant, not a conversion of this one."
     ]
+
+
+@dataclass(frozen=True)
+class Held:
+    """The band that each candidate's difference from today is held against."""
+
+    comparison: Comparison
+    solved: Sequence[Entry]
+    name: str
+
+    def band(self, entry: Entry) -> float:
+        """Return the band of a candidate against today's refrigerant. [- or K]"""
+        return pair_band(self.comparison.existing, entry, self.name)
+
+    @property
+    def narrowest(self) -> float:
+        """Return the narrowest of these bands, which the words of a group state. [- or K]"""
+        return min(self.band(entry) for entry in self.solved)
+
+    def own(self, entry: Entry, show: Callable[[float], str] = "{:.0%}".format) -> str:
+        """Return what follows the amount of a candidate whose band is wider than the one stated."""
+        band = self.band(entry)
+        return f", its band ±{show(band)}" if band > self.narrowest else ""
+
+    def within(self, show: Callable[[float], str] = "{:.0%}".format) -> str:
+        """Return inside of what there is no meaningful difference, in words."""
+        is_one = all(self.band(entry) == self.narrowest for entry in self.solved)
+        return f"within ±{show(self.narrowest)}{'' if is_one else ', or the band named'}"
+
+    def groups(self, ratio: Callable[[Entry], float]) -> tuple[Group, ...]:
+        """Return the groups of a ratio to today: above the band, inside and below."""
+        return (
+            (lambda e: ratio(e) > 1.0 + self.band(e), "higher"),
+            (lambda e: abs(ratio(e) - 1.0) <= self.band(e), f"no meaningful difference ({self.within()})"),
+            (lambda e: ratio(e) < 1.0 - self.band(e), "lower"),
+        )
 
 
 Group = tuple[Callable[[Entry], bool], str]

@@ -19,9 +19,9 @@ from retrofit.checks.operating import (
     vacuum,
 )
 from retrofit.checks.room.change import asked_text
-from retrofit.checks.thresholds import model_band
 from retrofit.refrigerants import parse_safety_class
 from retrofit.study import Comparison, Entry, Finding, Performance
+from retrofit.study.bands import pair_band
 from retrofit.units import listed
 
 KELVIN = 273.15
@@ -100,7 +100,7 @@ def capacity(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             yield from _today_against_duty(comparison, entry.compressor)
         return
     found = cooling_reached(comparison, entry)
-    limit, band = limit_of(comparison, "capacity"), model_band()["capacity"].value
+    limit, band = limit_of(comparison, "capacity"), pair_band(comparison.existing, entry, "capacity")
     if found is None:
         return
     reached, needed, machine = found

@@ -1,4 +1,4 @@
-"""The thresholds of the checks and the band of the model, read from thresholds.toml."""
+"""The thresholds of the checks, read from thresholds.toml."""
 
 from __future__ import annotations
 
@@ -74,15 +74,6 @@ class Threshold:
         return None
 
 
-@dataclass(frozen=True)
-class Band:
-    """How far a number can be from what a plant does."""
-
-    value: float
-    unit: str
-    source: str
-
-
 @cache
 def _table() -> Mapping[str, dict[str, object]]:
     text = files("retrofit.checks").joinpath("thresholds.toml").read_text(encoding="utf-8")
@@ -102,7 +93,7 @@ def thresholds_for(case: Case) -> Mapping[str, Threshold]:
         case: The case.
     Raises: CaseFileError for a name or a level that there is not, or figures in the wrong order.
     """
-    table = {name: threshold(name) for name in _table() if name != "band"}
+    table = {name: threshold(name) for name in _table()}
     own = case.thresholds.by_name if case.thresholds else {}
     problems = [problem for name, figures in own.items() for problem in _problems(name, figures, table)]
     if problems:
@@ -144,9 +135,3 @@ def _laid_over(limit: Threshold, own: OwnThreshold) -> Threshold:
     source = f"set in the case, instead of {instead} ({limit.source})"
     figures = {**limit.figures, **given}
     return Threshold(limit.unit, source, "case", *(figures.get(level) for level in LEVELS))
-
-
-@cache
-def model_band() -> Mapping[str, Band]:
-    """Return the bands: capacity, cop, T_discharge, pressure."""
-    return {name: Band(**entry) for name, entry in _table()["band"].items()}  # type: ignore[arg-type]

@@ -6,15 +6,17 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import Any
 
-from retrofit.checks import model_band, threshold
+from retrofit.checks import threshold
 from retrofit.figures.drawing import Drawing, canvas, to_svg
 from retrofit.figures.style import HAIRLINE, INK, LABEL_PT, SMALL_PT, THIN, mark_of
 from retrofit.study import Comparison, Entry
-from retrofit.units import UnitSystem, format_number
+from retrofit.study.bands import band_of, model_band, pair_band
+from retrofit.units import UnitSystem, format_number, listed
 
 KELVIN = 273.15
 ROW_IN, FRAME_IN = 0.235, 0.76
 MARGINS_IN = (0.9, 0.5, 0.26, 0.46)  # left, right, top, bottom
+ZONE = 0.42  # half the height of a row's own band [rows]
 PAIR = (30, 64)  # where two columns in the right margin end [pt]
 
 
@@ -67,7 +69,7 @@ def discharge_chart(comparison: Comparison, units: UnitSystem) -> Drawing:
         units: The reader's units.
     Returns: The chart.
     """
-    band, limits = model_band()["T_discharge"].value, threshold("discharge_temperature")
+    limits = threshold("discharge_temperature")
     solved = _solved(comparison)
 
     def number(T_K: float) -> float:
@@ -75,7 +77,9 @@ def discharge_chart(comparison: Comparison, units: UnitSystem) -> Drawing:
 
     with canvas(_height(comparison), *MARGINS_IN) as figure:
         axes = figure.subplots()
-        values = [number(entry.duty.T_discharge_K + sign * band) for entry in solved for sign in (-1, 1)]
+        values = [
+            number(entry.duty.T_discharge_K + sign * _discharge_band(entry)) for entry in solved for sign in (-1, 1)
+        ]
         for level, side in ((limits.work, "right"), (limits.stop, "left")):
             if level is not None:
                 values.append(number(level + KELVIN))
@@ -86,7 +90,7 @@ def discharge_chart(comparison: Comparison, units: UnitSystem) -> Drawing:
         for place, entry in _rows(axes, comparison):
             if entry.duty is None:
                 continue
-            mark, T = mark_of(place), entry.duty.T_discharge_K
+            mark, T, band = mark_of(place), entry.duty.T_discharge_K, _discharge_band(entry)
             axes.plot((number(T - band), number(T + band)), (place, place), color=mark.colour, linewidth=THIN)
             axes.plot([number(T)], [place], mark.marker, color=mark.colour, markersize=6)
             _margin_value(axes, place, f"{number(T):.0f}")
@@ -95,13 +99,27 @@ def discharge_chart(comparison: Comparison, units: UnitSystem) -> Drawing:
         words = _words(comparison, lambda e: f"{number(e.duty.T_discharge_K):.0f}")
         described = f"In {units.label('temperature')}: {words}"
         svg = to_svg(figure, "discharge", "Discharge temperatures", described)
-    width = units.with_unit("temperature difference", band, decimals=0)
     caption = (
-        f"Discharge temperature; the line through each mark is the band of the model, ±{width}. The thin "
-        "vertical line is today's. The dashed lines are the levels of the checks, not a maker's limits: the maker's "
-        "written limit goes before them."
+        f"Discharge temperature; the line through each mark is the band of the model, {_widths(solved, units)}. "
+        "The thin vertical line is today's. The dashed lines are the levels of the checks, not a maker's limits: the "
+        "maker's written limit goes before them."
     )
     return Drawing("discharge", svg, caption, described)
+
+
+def _discharge_band(entry: Entry) -> float:
+    return band_of(entry, "T_discharge")
+
+
+def _widths(solved: Sequence[Entry], units: UnitSystem) -> str:
+    """Return the bands of the discharge temperature in words, the narrowest first."""
+    found: dict[float, list[str]] = {}
+    for entry in sorted(solved, key=_discharge_band):
+        found.setdefault(_discharge_band(entry), []).append(entry.refrigerant.display_name)
+    (common, _), *others = [
+        (f"±{units.with_unit('temperature difference', band, decimals=0)}", names) for band, names in found.items()
+    ] or [("", [])]
+    return common + "".join(f", {width} of {listed(names, 'and')}" for width, names in others)
 
 
 @dataclass(frozen=True)
@@ -149,6 +167,7 @@ def change_charts(comparison: Comparison) -> tuple[Drawing, ...]:
 
 def _changes(comparison: Comparison, name: str, title: str, panels: tuple[Panel, Panel], caption: str) -> Drawing:
     bands = [100.0 * model_band()[panel.band].value for panel in panels]
+    caption += _wider_words(comparison, panels)
     with canvas(_height(comparison), *MARGINS_IN) as figure:
         both = figure.subplots(1, 2, sharey=True, gridspec_kw={"wspace": 0.1})
         found = [
@@ -173,6 +192,7 @@ def _panel(axes: Any, comparison: Comparison, panel: Panel, band: float) -> list
     values = []
     for place, entry in _rows(axes, comparison):
         if panel.ratio in entry.relative:
+            values += _own_zone(axes, place, 100.0 * _panel_band(comparison, entry, panel), band)
             mark, value = mark_of(place), 100 * (entry.relative[panel.ratio] - 1.0)
             values.append(value)
             axes.plot([value], [place], mark.marker, color=mark.colour, markersize=6)
@@ -184,6 +204,38 @@ def _panel(axes: Any, comparison: Comparison, panel: Panel, band: float) -> list
     axes.annotate(text, (0.0, 1.0), (0, 3), xycoords=("data", "axes fraction"), textcoords="offset points",
                   ha="center", va="bottom", fontsize=SMALL_PT)  # fmt: skip
     return values
+
+
+def _panel_band(comparison: Comparison, entry: Entry, panel: Panel) -> float:
+    """Return the band of a row; the existing refrigerant, which is the zero line, has none of its own."""
+    today = comparison.existing
+    return model_band()[panel.band].value if entry is today else pair_band(today, entry, panel.band)
+
+
+def _own_zone(axes: Any, place: int, band: float, base: float) -> list[float]:
+    """Widen the grey band in one row where the model of a refrigerant is worse, and return the ends. [%]"""
+    if band <= base:
+        return []
+    for low, high in ((-band, -base), (base, band)):
+        axes.fill_between((low, high), place - ZONE, place + ZONE, color=INK, alpha=0.09, linewidth=0)
+    return [-band, band]
+
+
+def _wider_words(comparison: Comparison, panels: tuple[Panel, Panel]) -> str:
+    """Return the sentence of the caption on rows with a wider band; empty if there is none."""
+    found: dict[str, list[str]] = {}
+    for entry in comparison.candidates:
+        bands = {
+            panel.label.split(",")[0].replace("Cooling", "cooling"): _panel_band(comparison, entry, panel)
+            for panel in panels
+        }
+        if entry.duty is not None and any(
+            _panel_band(comparison, entry, p) > model_band()[p.band].value for p in panels
+        ):
+            words = " and ".join(f"{name} ±{100.0 * band:.0f} %" for name, band in bands.items())
+            found.setdefault(words, []).append(entry.refrigerant.display_name)
+    rows = "; ".join(f"{listed(names, 'and')}: {words}" for words, names in found.items())
+    return f" Wider in its row where the model of a refrigerant, or of today's, is worse: {rows}." if rows else ""
 
 
 def _change_words(entry: Entry, panels: tuple[Panel, Panel]) -> str:

@@ -6,12 +6,12 @@ import math
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 
-from retrofit.checks import model_band
 from retrofit.checks.operating import discharge_limit, limit_of
 from retrofit.refrigerants import GWP_BASES
 from retrofit.report.jobcard import KELVIN, UNKNOWN, Job, span
 from retrofit.report.judging import spelled
 from retrofit.report.values import potential_text
+from retrofit.study.bands import bands_of
 from retrofit.study.changeover import Expected, PressureRow, Window, operating_span, pressure_rows
 from retrofit.study.hardware.settings import SET_POINTS
 from retrofit.study.practice import practice
@@ -246,7 +246,7 @@ def _ends(window: Window, show: Callable[[float], str]) -> str:
 
 
 def _window_notes(job: Job, expected: Sequence[Expected]) -> tuple[str, ...]:
-    band, numbers = model_band(), job.entry.hardware_numbers
+    band, numbers = bands_of(job.entry), job.entry.hardware_numbers
     discharge = job.units.with_unit("temperature difference", band["T_discharge"].value, decimals=0)
     notes = [
         spelled(

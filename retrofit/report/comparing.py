@@ -4,12 +4,12 @@ from __future__ import annotations
 
 from collections.abc import Iterable
 
-from retrofit.checks import model_band
 from retrofit.report.plant import plant_groups
 from retrofit.report.rows import change_row, near, quantity_row
 from retrofit.report.table import Group, Notes, Row, Table, number_row, word_row
 from retrofit.report.values import gwp_rows, value_row
 from retrofit.study import Comparison, Entry
+from retrofit.study.bands import pair_band
 from retrofit.units import UnitSystem
 
 SAME = "the same at same duty and same compressor"
@@ -114,11 +114,11 @@ def _temperatures(comparison: Comparison, units: UnitSystem) -> tuple[Row, ...]:
 
 
 def _discharge_change(comparison: Comparison, units: UnitSystem) -> Row:
-    band = model_band()["T_discharge"].value
     texts = []
     for entry in comparison.entries:
         rise = None if entry is comparison.existing else entry.T_discharge_difference_K
         text = units.text("temperature difference", rise, decimals=0, signed=True)
+        band = pair_band(comparison.existing, entry, "T_discharge")
         texts.append(near(text) if rise is not None and abs(rise) <= band else text)
     return number_row("Discharge against today", units.label("temperature difference"), texts)
 

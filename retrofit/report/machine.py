@@ -12,6 +12,7 @@ from typing import Any
 from retrofit.properties import Grade
 from retrofit.refrigerants import GWP_BASES, Refrigerant
 from retrofit.study import Baseline, Comparison, Component, Entry, Finding, Installed, Performance, Point
+from retrofit.study.bands import bands_of
 from retrofit.study.compare import RATIOS
 from retrofit.study.law import LawCheck
 
@@ -103,6 +104,7 @@ def _entry(entry: Entry) -> dict[str, Any]:
         "safety_class": entry.refrigerant.safety_class.value,
         **gwp_values(entry.refrigerant),
         "model": _grade(entry.grade),
+        "bands": _bands(entry),
         "duty": _performance(entry.duty, entry.points),
         "compressor": _performance(entry.compressor, entry.points),
         "plant": _plant(entry.plant),
@@ -151,6 +153,17 @@ def _grade(grade: Grade | None) -> dict[str, Any] | None:
         "bubble_1atm_difference_K": grade.bubble_difference_K,
         "dew_1atm_difference_K": grade.dew_difference_K,
         "text": grade.text,
+    }
+
+
+def _bands(entry: Entry) -> dict[str, Any]:
+    """Return how far the numbers of a refrigerant can be off, relative and in kelvin, and why that far."""
+    bands = bands_of(entry)
+    names = {"T_discharge": "T_discharge_K"}
+    deciding = bands["pressure"]
+    return {names.get(name, name): band.value for name, band in bands.items()} | {
+        "boiling_point_offset_K": deciding.offset_K,
+        "reason": deciding.reason,
     }
 
 

@@ -10,8 +10,9 @@ from typing import ClassVar
 
 from retrofit import figures
 from retrofit.case import Case
-from retrofit.checks import answer, model_band, not_checked
+from retrofit.checks import answer, not_checked
 from retrofit.checks.changeover import chosen_for_cards
+from retrofit.report.banding import band_text
 from retrofit.report.cautioning import DEFERENCE, CautionGroup, caution_groups
 from retrofit.report.commissioning import Sheet, sheet
 from retrofit.report.comparing import comparison_table, convention
@@ -144,7 +145,7 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
         front=front(comparison, units),
         answer=_answer(comparison, units),
         convention=convention(comparison),
-        band=band_text(units),
+        band=band_text(comparison, units),
         judged=tuple(candidates),
         existing=existing,
         shared=shared,
@@ -184,17 +185,6 @@ def css_string(text: str) -> str:
     Source: CSS Syntax Module Level 3, 4.3.7: a backslash, one to six hex digits and a blank.
     """
     return "".join(c if c.isascii() and c.isalnum() else f"\\{ord(c):x} " for c in text)
-
-
-def band_text(units: UnitSystem) -> str:
-    """Return the band of the model in one sentence."""
-    band = model_band()
-    discharge = units.with_unit("temperature difference", band["T_discharge"].value, decimals=0)
-    return spelled(
-        f"Band of the model: capacity ±{band['capacity'].value:.0%}, COP ±{band['cop'].value:.0%}, discharge "
-        f"temperature ±{discharge}, pressures ±{band['pressure'].value:.0%}. A difference inside the band is no "
-        "meaningful difference; in the tables it carries the sign ≈."
-    )
 
 
 def _answer(comparison: Comparison, units: UnitSystem) -> Answered:

@@ -4,10 +4,10 @@ from __future__ import annotations
 
 from operator import attrgetter
 
-from retrofit.checks import model_band
 from retrofit.report.rows import change_row, change_text, near, quantity_row
 from retrofit.report.table import Cell, Group, Notes, Row
 from retrofit.study import Comparison, Entry
+from retrofit.study.bands import pair_band
 from retrofit.units import MISSING, UnitSystem
 
 HELD = "existing compressor and exchangers, same air, water or brine; pressures float"
@@ -185,14 +185,15 @@ def speed_rows(comparison: Comparison, units: UnitSystem, speeds: list[float | N
 
 
 def _unmet_cells(comparison: Comparison, units: UnitSystem) -> tuple[Cell, ...]:
-    return tuple(Cell(unmet_text(entry, units, "none")) for entry in comparison.entries)
+    return tuple(Cell(unmet_text(entry, comparison.existing, units, "none")) for entry in comparison.entries)
 
 
-def unmet_text(entry: Entry, units: UnitSystem, nothing: str) -> str:
+def unmet_text(entry: Entry, today: Entry, units: UnitSystem, nothing: str) -> str:
     """Return the cooling a refrigerant lacks; one inside the band of the model begins with the sign ≈.
 
     Args:
         entry: A refrigerant.
+        today: The existing one, whose cooling is what it has to reach.
         units: The reader's units.
         nothing: What stands for lacking none. [-]
     """
@@ -202,4 +203,4 @@ def unmet_text(entry: Entry, units: UnitSystem, nothing: str) -> str:
     if lacks <= 0.0:
         return nothing
     text = units.text("cooling", lacks, decimals=units.displays["cooling"].decimals_for([needed]))
-    return near(text) if lacks <= model_band()["capacity"].value * needed else text
+    return near(text) if lacks <= pair_band(today, entry, "capacity") * needed else text

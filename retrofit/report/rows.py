@@ -2,9 +2,9 @@
 
 from __future__ import annotations
 
-from retrofit.checks import model_band
 from retrofit.report.table import Row, number_row
 from retrofit.study import Comparison
+from retrofit.study.bands import pair_band
 from retrofit.units import MISSING, UnitSystem, format_number
 
 PERCENT = "%"
@@ -38,10 +38,13 @@ def change_row(label: str, comparison: Comparison, ratio: str, band: str) -> Row
         label: What changes.
         comparison: The result.
         ratio: Name of the ratio to today.
-        band: Name of the band of the model that it is held against.
+        band: Name of the band of the model that it is held against, the wider of today's and the refrigerant's own.
     """
-    width = model_band()[band].value
-    return number_row(label, PERCENT, [change_text(entry.relative.get(ratio), width) for entry in comparison.entries])
+    texts = [
+        change_text(entry.relative.get(ratio), pair_band(comparison.existing, entry, band))
+        for entry in comparison.entries
+    ]
+    return number_row(label, PERCENT, texts)
 
 
 def change_text(ratio: float | None, band: float) -> str:

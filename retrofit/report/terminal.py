@@ -4,8 +4,9 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
-from retrofit.checks import LEVELS, Answer, answer, model_band, not_checked
+from retrofit.checks import LEVELS, Answer, answer, not_checked
 from retrofit.refrigerants import GWP_BASES, Caution
+from retrofit.report.banding import bands_text, wider_texts
 from retrofit.report.catalogue import MARK, MARK_MEANS, class_text, gwp_text
 from retrofit.report.terminal_plant import (
     NEAR,
@@ -19,6 +20,7 @@ from retrofit.report.terminal_plant import (
 from retrofit.report.terminal_site import law_text, room_text
 from retrofit.report.text_table import Column, paragraph, text_table
 from retrofit.study import Comparison, Entry
+from retrofit.study.bands import model_band
 from retrofit.units import UnitSystem, listed, shown
 
 INDENT = " " * 9
@@ -130,7 +132,7 @@ def _duty(comparison: Comparison, solved: Sequence[Entry], units: UnitSystem, st
         Column("COP vs", "today"),
     ]
     cells = [units.column(kind, [getattr(entry.duty, name) for entry in solved]) for _, kind, name in kinds]
-    ratios = [change_cell(entry, "cop") for entry in solved]
+    ratios = [change_cell(entry, comparison.existing, "cop") for entry in solved]
     rows = [list(row) for row in zip(row_names(solved), *cells, ratios, strict=True)]
     return f"{heading}\n{text_table(columns, rows)}"
 
@@ -152,7 +154,7 @@ def _compressor(comparison: Comparison, solved: Sequence[Entry], units: UnitSyst
         Column("Power vs", "today"),
     ]
     cells = [units.column(kind, [getattr(entry.compressor, name) for entry in solved]) for _, kind, name in kinds]
-    ratios = [[change_cell(entry, name) for entry in solved] for name in ("capacity", "power")]
+    ratios = [[change_cell(entry, comparison.existing, name) for entry in solved] for name in ("capacity", "power")]
     rows = [list(row) for row in zip(row_names(solved), *cells, *ratios, strict=True)]
     return f"{heading}\n{text_table(columns, rows)}"
 
@@ -200,14 +202,12 @@ def _findings(comparison: Comparison, columns: int, strong: Emphasis) -> str:
 
 
 def _small_print(comparison: Comparison, units: UnitSystem, columns: int, strong: Emphasis) -> str:
-    bands = model_band()
-    discharge = units.with_unit("temperature difference", bands["T_discharge"].value, decimals=0)
     case = comparison.case
     assumed = [f"{item.key} = {item.shown_text}" for item in case.defaults]
     parts = [
-        f"Accuracy: capacity ±{bands['capacity'].value:.0%}, COP ±{bands['cop'].value:.0%}, discharge "
-        f"±{discharge}, pressures ±{bands['pressure'].value:.0%}; {NEAR} marks a difference "
-        "inside the band: no meaningful difference.",
+        f"Accuracy: {bands_text(model_band(), units)}; {NEAR} marks a difference inside the band: no meaningful "
+        "difference.",
+        *wider_texts(comparison, units),
         f"Assumed, not in the case: {listed(assumed, 'and')}." if assumed else "",
         "Not checked: " + "; ".join(not_checked(comparison)) + ".",
         "Versions: " + ", ".join(f"{name} {number}" for name, number in comparison.versions.items()) + ".",

@@ -4,12 +4,12 @@ from __future__ import annotations
 
 from collections.abc import Callable, Sequence
 
-from retrofit.checks import model_band
 from retrofit.report.found import derived_text
 from retrofit.report.hardware import component_names, verdict_words
 from retrofit.report.plant import cooling_needed_text, has_plant, plant_reason, unmet_text
 from retrofit.report.text_table import GAP, Column, paragraph, text_table, width
 from retrofit.study import Comparison, Entry
+from retrofit.study.bands import pair_band
 from retrofit.units import UnitSystem, format_number
 
 Emphasis = Callable[[str], str]
@@ -24,17 +24,18 @@ def row_names(entries: Sequence[Entry]) -> list[str]:
     return [f"{entry.refrigerant.designation}{' (today)' if entry.family == 'keep' else ''}" for entry in entries]
 
 
-def change_cell(entry: Entry, ratio: str) -> str:
+def change_cell(entry: Entry, today: Entry, ratio: str) -> str:
     """Return a ratio to today as a change, with a sign before it where it lies inside the band of the model.
 
     Args:
         entry: A refrigerant.
+        today: The existing one.
         ratio: Name of the ratio.
     """
     if entry.family == "keep" or ratio not in entry.relative:
         return NOTHING
     change = entry.relative[ratio] - 1.0
-    band = model_band()["cop" if "cop" in ratio else "capacity"].value
+    band = pair_band(today, entry, "cop" if "cop" in ratio else "capacity")
     near = f"{NEAR} " if abs(change) <= band else ""
     return f"{near}{format_number(100.0 * change, 1, signed=True)} %"
 
@@ -71,17 +72,18 @@ def _plant_table(comparison: Comparison, units: UnitSystem) -> str:
         f"{name}{'' if plant.is_covered else OUTSIDE}" for name, plant in zip(row_names(entries), plants, strict=True)
     ]
     T, kW = units.label("temperature"), units.label("cooling")
+    today = comparison.existing
     table = [
         (Column("", "", is_words=True), names),
         (Column("Evap.", T), units.column("temperature", [plant.full.T_evap_dew_K for plant in plants])),
         (Column("Cond.", T), units.column("temperature", [plant.full.T_cond_dew_K for plant in plants])),
         (Column("Discharge", T), units.column("temperature", [plant.full.T_discharge_K for plant in plants])),
         (Column("Cooling", kW), units.column("cooling", [plant.full.cooling_W for plant in plants])),
-        (Column("Cooling vs", "today"), [change_cell(entry, "plant_capacity") for entry in entries]),
-        (Column("COP vs", "today"), [change_cell(entry, "plant_cop_same_cooling") for entry in entries]),
+        (Column("Cooling vs", "today"), [change_cell(entry, today, "plant_capacity") for entry in entries]),
+        (Column("COP vs", "today"), [change_cell(entry, today, "plant_cop_same_cooling") for entry in entries]),
         (Column("Runs", "%"), units.column("fraction", [plant.operation.run_time_fraction for plant in plants])),
         (Column("Speed", "%"), units.column("fraction", [plant.operation.speed_fraction for plant in plants])),
-        (Column("Lacks", kW), [unmet_text(entry, units, NOTHING) for entry in entries]),
+        (Column("Lacks", kW), [unmet_text(entry, today, units, NOTHING) for entry in entries]),
     ]
     if all(plant.operation.speed_fraction == 1.0 for plant in plants):
         table = [item for item in table if item[0].heading != "Speed"]

@@ -5,8 +5,9 @@ from dataclasses import replace
 
 import pytest
 
-from retrofit.checks import answer, assess, model_band
+from retrofit.checks import answer, assess
 from retrofit.study import compare
+from retrofit.study.bands import model_band
 from retrofit.units import IP, SI
 
 KELVIN = 273.15
@@ -107,7 +108,7 @@ def test_capacity_within_the_band_is_as_much_as_needed(store, share, words):
 
 
 def test_bands_in_the_words_are_the_bands_of_the_file(store):
-    """What the sentences call meaningless is the band that the thresholds file states."""
+    """What the sentences call meaningless is the band that the file of bands states."""
     band = model_band()
     text = " ".join(answer(store, SI).sentences)
 

@@ -5,11 +5,11 @@ from importlib.resources import files
 
 import pytest
 
-from retrofit.checks import Threshold, assess, model_band, threshold, thresholds
+from retrofit.checks import Threshold, assess, threshold, thresholds
 
 TEXT = files("retrofit.checks").joinpath("thresholds.toml").read_text(encoding="utf-8")
 TABLE = tomllib.loads(TEXT)
-NAMES = sorted(set(TABLE) - {"band"})
+NAMES = sorted(TABLE)
 
 
 @pytest.fixture
@@ -17,16 +17,13 @@ def limits(monkeypatch):
     """Return a function that puts other limits in the file, as if it had been edited."""
     changed = tomllib.loads(TEXT)
     monkeypatch.setattr(thresholds, "_table", lambda: changed)
-    caches = (threshold, model_band)
 
     def set_limits(name, **figures):
         changed[name] |= figures
-        for cached in caches:
-            cached.cache_clear()
+        threshold.cache_clear()
 
     yield set_limits
-    for cached in caches:
-        cached.cache_clear()
+    threshold.cache_clear()
 
 
 @pytest.mark.parametrize("name", NAMES)
@@ -39,12 +36,6 @@ def test_a_threshold_has_a_level_a_unit_a_source_and_its_basis(name):
     assert limit.source
     assert limit.basis in ("read", "practice", "memory")
     assert (limit.basis == "memory") == ("from memory" in limit.source)
-
-
-def test_bands_have_unit_and_source():
-    """The four bands are there, each with where it comes from."""
-    assert set(model_band()) == {"capacity", "cop", "T_discharge", "pressure"}
-    assert all(band.value > 0.0 and band.unit and band.source for band in model_band().values())
 
 
 def test_discharge_limits_are_those_of_the_trade_press():

@@ -14,9 +14,9 @@ from pathlib import Path
 
 import pytest
 
-from retrofit.checks import model_band
 from retrofit.cycle import Settings, solve_cycle
 from retrofit.properties import fluid
+from retrofit.study.bands import model_band
 
 TABLE = Path(__file__).resolve().parents[1] / "published" / "compressor_ratios.csv"
 RETURN_GAS_C = 18.3

@@ -7,9 +7,10 @@ from pathlib import Path
 import numpy as np
 import pytest
 
-from retrofit.checks import assess, model_band
+from retrofit.checks import assess
 from retrofit.checks.changeover import changeover_of, chosen_for_cards
 from retrofit.study import compare
+from retrofit.study.bands import model_band
 from retrofit.study.changeover import Window, operating_span, pressure_rows, recovery
 from retrofit.study.practice import practice, practice_figures
 
