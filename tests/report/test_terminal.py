@@ -90,7 +90,10 @@ def test_numbers_shown_are_the_results(comparison):
         assert number(cooling) == pytest.approx(entry.compressor.cooling_W / 1e3, abs=0.051)
         if entry.family != "keep":
             change = re.split(r"\s{2,}", row)[-1]
-            assert number(change) == pytest.approx(100 * (entry.relative["cop"] - 1), abs=0.051)
+            # 6 % of COP, and 8 % of R1123, whose model has nothing published to be checked against.
+            band = 0.08 if entry.grade.word == "not checked" else 0.06
+            assert change.startswith("≈") == (abs(entry.relative["cop"] - 1) <= band)
+            assert number(change.lstrip("≈ ")) == pytest.approx(100 * (entry.relative["cop"] - 1), abs=0.051)
 
 
 def test_inch_pound_units_are_used_throughout_the_tables(comparison):
