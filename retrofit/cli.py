@@ -319,12 +319,12 @@ def commission(
     on: datetime | None,
 ) -> None:
     """Write job card and commissioning sheet of the change of a CASE to one REFRIGERANT as one HTML file."""
+    from retrofit.case.exchangers import INLET
     from retrofit.refrigerants import find
     from retrofit.report import render_site_copy, write_report
-    from retrofit.units import parse_quantity
 
     name = find(refrigerant).designation
-    T_inlet_K = None if inlet is None else parse_quantity(inlet, "temperature")
+    T_inlet_K = None if inlet is None else INLET.read(inlet)
     html = render_site_copy(
         _compared(case_file, on),
         name,

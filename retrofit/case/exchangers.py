@@ -11,7 +11,7 @@ from retrofit.case.values import Choice, Quantity
 
 FLOW = Quantity("mass flow", "0 kg/s", "100000 kg/s", "no single plant has more", above_low=True, example="8 kg/s")
 SPECIFIC_HEAT = Quantity("specific heat", "0.5 kJ/(kg K)", "10 kJ/(kg K)", "air, water and brines lie within it")
-_INLET = Quantity("temperature", "-100 degC", "150 degC", "air, water and brine lie within it", example="2 degC")
+INLET = Quantity("temperature", "-100 degC", "150 degC", "air, water and brine lie within it", example="2 degC")
 _AS_TODAY = WhyDefault("the exchanger is taken as good with every refrigerant as with today's", beside="inlet")
 _NO_LOSS = WhyDefault("no pressure drop in the exchanger is counted", beside="inlet")
 
@@ -41,8 +41,8 @@ class Exchanger(Table):
     medium: Annotated[str | None, Choice(("air", "water", "brine"), (("GLYCOL", "brine"),))] = key(
         "medium", "What flows on the other side.", None
     )
-    inlet_K: Annotated[float | None, _INLET] = key("inlet", "Temperature at which it enters.", None)
-    outlet_K: Annotated[float | None, _INLET] = key("outlet", "Temperature at which it leaves.", None)
+    inlet_K: Annotated[float | None, INLET] = key("inlet", "Temperature at which it enters.", None)
+    outlet_K: Annotated[float | None, INLET] = key("outlet", "Temperature at which it leaves.", None)
     flow_kg_per_s: Annotated[float | None, FLOW] = key("flow", "Its mass flow, instead of the outlet.", None)
     specific_heat_J_per_kgK: Annotated[float | None, SPECIFIC_HEAT] = key(
         "specific_heat", "Its specific heat, beside the flow.", None

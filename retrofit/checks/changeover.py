@@ -7,7 +7,7 @@ from dataclasses import dataclass
 
 from retrofit.checks.thresholds import thresholds_for
 from retrofit.study import Comparison, Entry
-from retrofit.study.bands import bands_of
+from retrofit.study.bands import QUANTITIES, bands_of
 from retrofit.study.changeover import Bands, Changeover, changeover
 
 MOST_CARDS = 3  # so that the report of a case with many candidates does not grow without bound
@@ -72,7 +72,6 @@ def changeover_of(comparison: Comparison, entry: Entry, T_inlet_today_K: float |
         T_inlet_today_K: Temperature at the inlet of the condenser on the day, None to leave it out. [K]
     """
     band, oil = bands_of(entry), thresholds_for(comparison.case)["residual_oil"]
-    # There is no band of power itself: capacity over COP, taken at its widest.
-    power = band["capacity"].value + band["cop"].value
+    power = band[QUANTITIES["power"][0]].value
     bands = Bands(band["pressure"].value, power, band["T_discharge"].value)
     return changeover(comparison, entry, bands, sorted(oil.figures.values()), T_inlet_today_K)

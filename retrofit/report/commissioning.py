@@ -7,7 +7,7 @@ from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 
 from retrofit.checks.operating import discharge_limit, limit_of
-from retrofit.refrigerants import GWP_BASES
+from retrofit.refrigerants import GWP_BASES, is_flammable
 from retrofit.report.jobcard import KELVIN, UNKNOWN, Job, span
 from retrofit.report.judging import spelled
 from retrofit.report.values import potential_text
@@ -19,7 +19,8 @@ from retrofit.units import MISSING
 
 MOST_ROWS, COLUMNS = 96, 4  # rows of the pressure-temperature table, and how many parts stand side by side
 STEPS = {"si": (1.0, 2.0, 5.0), "ip": (2.0, 4.0, 10.0)}  # in the reader's degrees
-FEW_DIGITS = 20.0  # from here on a window of a tenth needs no decimals
+FEW_DIGITS, FEWER_DIGITS = 20.0, 2.0  # from here on a window of a tenth needs no decimals, or one
+NO_GLIDE = 0.01  # of the pressure, our own: bubble and dew columns closer than this are one for a gauge
 MARGIN_K = 6.0  # beyond the operating range
 WHEN = ("Start", "1 h", "24 h", "1 week", "1 month", "Hot day")
 INLETS = {
@@ -64,7 +65,7 @@ class PressureTable:
 
     Attributes:
         units: Unit of temperature and of gauge pressure.
-        headings: Names of the pressure columns: one where the refrigerant has no glide that is seen.
+        headings: Names of the pressure columns: one where bubble and dew point are closer than `NO_GLIDE`.
         parts: Parts of rows: temperature and its cells.
         reason: Why there is no table; empty otherwise.
     """
@@ -180,6 +181,8 @@ def _targets(job: Job) -> tuple[Target, ...]:
     at_bulb = _range(job, "superheat_bulb")
     if case.plant.evaporator in ("flooded", "pumped"):
         at_bulb = f"none: {case.plant.evaporator} evaporator, hold its level"
+    elif case.valve and case.valve.kind == "capillary":
+        at_bulb = "follows from the charge: capillary tube"
     cooling = ["subcooling_receiver"] if case.receiver else ["subcooling_receiver", "subcooling_critical"]
     words = [_range(job, name) + (" without a receiver" if name == "subcooling_critical" else "") for name in cooling]
     subcooling = f"{words[0]} with a receiver, sight glass clear" + "".join(f"; {more}" for more in words[1:])
@@ -208,12 +211,12 @@ def _windows(job: Job) -> Windows:
         return Windows((), (), (), spelled(changing.expected_reason))
     ambient = job.comparison.case.plant.ambient_pressure_Pa
 
-    def gauge(window: Window) -> str:
-        return _ends(window, lambda p: units.text("gauge pressure", p - ambient, decimals=1))
+    def gauge(window: Window, decimals: int | None) -> str:
+        return _ends(window, lambda p: units.text("gauge pressure", p - ambient, decimals=decimals))
 
     kinds: tuple[tuple[str, str, str, Callable[[Window], str]], ...] = (
-        ("Suction (evaporating)", "gauge pressure", "p_evap_Pa", gauge),
-        ("Discharge (condensing)", "gauge pressure", "p_cond_Pa", gauge),
+        ("Suction (evaporating)", "gauge pressure", "p_evap_Pa", lambda w: gauge(w, None)),
+        ("Discharge (condensing)", "gauge pressure", "p_cond_Pa", lambda w: gauge(w, 1)),
         ("Discharge line", "temperature", "T_discharge_K", lambda w: _shown(job, "temperature", w, 0)),
         ("Current", "current", "current_A", lambda w: _shown(job, "current", w, _decimals(w))),
         ("Compressor power", "power", "power_W", lambda w: _shown(job, "power", w, _decimals(w, 1000.0))),
@@ -238,7 +241,7 @@ def _shown(job: Job, kind: str, window: Window, decimals: int | None) -> str:
 
 def _decimals(window: Window, unit: float = 1.0) -> int:
     """Return decimals that do not pretend more than the band allows."""
-    return 0 if window.low / unit >= FEW_DIGITS else 1
+    return 0 if window.low / unit >= FEW_DIGITS else 1 if window.low / unit >= FEWER_DIGITS else 2
 
 
 def _ends(window: Window, show: Callable[[float], str]) -> str:
@@ -275,9 +278,9 @@ def _pressures(job: Job) -> PressureTable:
         return PressureTable(units, (), (), spelled(job.entry.reason or "it is not computed"))
     rows = [row for row in pressure_rows(job.entry.refrigerant.designation, _grid(job, reach)) if row.p_dew_Pa]
     lines = _lines(job, rows)
-    is_one = all(len({cell.text for cell in cells}) == 1 for _, cells in lines)
+    is_one = all((row.p_bubble_Pa or 0.0) < (1.0 + NO_GLIDE) * (row.p_dew_Pa or 0.0) for row in rows)
     if is_one:
-        lines = [(T, (PressureCell(cells[0].text, any(cell.is_target for cell in cells)),)) for T, cells in lines]
+        lines = [(T, (PressureCell(cells[-1].text, any(cell.is_target for cell in cells)),)) for T, cells in lines]
     size = -(-len(lines) // COLUMNS)
     parts = tuple(tuple(lines[start : start + size]) for start in range(0, len(lines), size))
     return PressureTable(units, ("Pressure",) if is_one else ("Bubble", "Mean", "Dew"), parts, "")
@@ -362,6 +365,8 @@ def _label(job: Job) -> tuple[str, ...]:
             f"GWP {potential_text(weight.gwp)} ({GWP_BASES[weight.basis]}). CO2 equivalent: kg charged × "
             f"{weight.gwp / 1000.0:.3f} = ________ t{expected}."
         )
+    if is_flammable(refrigerant.safety_class.text) is not False:
+        lines.append("Warning sign for flammable gas, by the standard that applies.")
     if len(job.changing.weights) > 1:
         lines.append("Which GWP the label states is set by the law of the place.")
     return tuple(lines)

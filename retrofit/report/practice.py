@@ -129,7 +129,7 @@ def _way_back(comparison: Comparison, units: UnitSystem) -> tuple[str, ...]:
 
 def _no_way_back(comparison: Comparison) -> tuple[str, ...]:
     old = comparison.existing.refrigerant.display_name
-    law = "what the tables of law say is in this report" if comparison.law else "the case names no law"
+    law = "the report has what the tables of law say" if comparison.law else "the case names no law"
     return (
         f"Whether law still lets {old} be filled in on that day: {law}; ask the authority.",
         "A charge that was mixed or burnt out goes to reclaim or destruction, not back into the plant.",

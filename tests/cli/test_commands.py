@@ -268,6 +268,51 @@ def test_report_that_cannot_be_written_is_our_error(run, good, tmp_path, name):
     assert re.fullmatch(r"retrofit: .*\n", result.stderr)
 
 
+# commission
+
+
+@pytest.fixture
+def site_copy(monkeypatch):
+    """Stand in for the drawing of a site copy, which has tests of its own, and return what it was asked for."""
+    asked = {}
+
+    def render(comparison, refrigerant, units, folder, **options):
+        asked.update(options, refrigerant=refrigerant, units=units, folder=folder)
+        return "<!doctype html>"
+
+    monkeypatch.setattr("retrofit.report.render_site_copy", render)
+    return asked
+
+
+def test_commission_writes_the_sheet_of_one_candidate(run, good, site_copy, tmp_path, monkeypatch):
+    """Refrigerant, units and the day's temperature are passed on; left out, the file is named for both."""
+    monkeypatch.chdir(tmp_path)
+    result = run("commission", good, "r-448a", "--units", "ip", "--inlet", "27 degC")
+
+    assert result.exit_code == 0
+    assert result.stdout.startswith("Wrote shop-R448A.html.")
+    assert Path("shop-R448A.html").read_text() == "<!doctype html>"
+    assert (site_copy["refrigerant"], site_copy["units"], site_copy["T_inlet_today_K"]) == ("R448A", "ip", 300.15)
+
+
+@pytest.mark.parametrize(
+    ("arguments", "status", "word"),
+    [
+        (["R4448A"], 2, "did you mean R448A"),
+        (["R22"], 1, "R22 is no candidate of this case; its candidates are"),
+        (["R448A", "--inlet", "-400 degC"], 2, "-100 degC to 150 degC"),
+        (["R448A", "--inlet", "5 bar"], 2, "a temperature is needed"),
+    ],
+)
+def test_commission_says_what_is_wrong(run, good, tmp_path, arguments, status, word):
+    """One line on the error stream, and no file."""
+    result = run("commission", good, *arguments, "-o", tmp_path / "sheet.html")
+
+    assert (result.exit_code, result.stdout) == (status, "")
+    assert re.fullmatch(rf"retrofit: .*{word}.*\n", result.stderr)
+    assert not (tmp_path / "sheet.html").exists()
+
+
 # refrigerants and pt
 
 

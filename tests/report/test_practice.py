@@ -81,12 +81,27 @@ def test_the_design_point_is_framed_where_a_gauge_reads_it(copies, market):
 
 
 def test_a_pure_refrigerant_has_one_column(case_with, made_at, read_page):
-    """R-134a has no glide: one pressure, and both ends of the cycle framed."""
-    result = assess(compare(case_with("R404A", ("R134a",))))
-    html = render_site_copy(result, "R134a", made_at=made_at)
+    """R-134a has no glide and R-513A less than 1 % of pressure: one column, both ends of the cycle framed."""
+    result = assess(compare(case_with("R404A", ("R134a", "R513A"))))
+    for name in ("R134a", "R513A"):
+        html = render_site_copy(result, name, made_at=made_at)
+        rows = read_page(html).tables[f"t-pt-{name}-1"]
+        (row,) = pressure_rows(name, [number_in_K(rows[1][0], "si")])
 
-    assert read_page(html).tables["t-pt-R134a-1"][0] == ["°C", "Pressure"]
-    assert html.count('class="target"') == 2
+        assert rows[0] == ["°C", "Pressure"]
+        assert number(rows[1][1]) * BAR_PA == pytest.approx(row.p_dew_Pa - 101_325.0, abs=501.0)
+        assert html.count('class="target"') == 2
+
+
+def test_a_flammable_refrigerant_asks_for_its_sign(assessed, made_at):
+    """The label of a class other than 1 has a line on the warning sign, that of class 1 none."""
+    labels = {
+        name: render_site_copy(assessed("harbour-market"), name, made_at=made_at).split("Text of the label")[1]
+        for name in ("R448A", "R454C")
+    }
+
+    assert "Warning sign for flammable gas" in labels["R454C"]
+    assert "Warning sign for flammable gas" not in labels["R448A"]
 
 
 def test_expected_readings_read_back(copies, market, read_page):
