@@ -159,6 +159,7 @@ def main() -> None:
     retrofit compare plant.toml     compare the candidates in the terminal
     retrofit report plant.toml      write the report: HTML, PDF, spreadsheet
     retrofit rerun plant.html       compute a report again
+    retrofit commission plant.toml R448A   print a job card for the site
     """
 
 
