@@ -11,7 +11,7 @@ from retrofit.refrigerants import GWP_BASES, is_flammable
 from retrofit.report.jobcard import KELVIN, UNKNOWN, Job, span
 from retrofit.report.judging import spelled
 from retrofit.report.values import potential_text
-from retrofit.study.bands import bands_of
+from retrofit.study.bands import QUANTITIES, bands_of
 from retrofit.study.changeover import Expected, PressureRow, Window, operating_span, pressure_rows
 from retrofit.study.hardware.settings import SET_POINTS
 from retrofit.study.practice import practice
@@ -255,7 +255,7 @@ def _window_notes(job: Job, expected: Sequence[Expected]) -> tuple[str, ...]:
         spelled(
             "Existing compressor and exchangers balanced at full load; as wide as the band of the model: pressure "
             f"±{band['pressure'].value:.0%}, discharge ±{discharge}, power and current "
-            f"±{band['capacity'].value + band['cop'].value:.0%} (capacity and COP together)."
+            f"±{band[QUANTITIES['power'][0]].value:.0%}."
         ),
         "Part load, dirt, stopped fans and line losses move readings further.",
     ]
