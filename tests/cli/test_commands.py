@@ -230,11 +230,11 @@ def page(monkeypatch):
     """Stand in for the drawing of a report, which has tests of its own, and return what it was asked for."""
     asked = {}
 
-    def render(comparison, **options):
-        asked.update(options, title=comparison.case.title)
+    def render(comparison, units, template_folder, **options):
+        asked.update(options, title=comparison.case.title, units=units, template_folder=template_folder)
         return "<!doctype html>"
 
-    monkeypatch.setattr("retrofit.report.render_html", render)
+    monkeypatch.setattr("retrofit.report.html.render_html", render)
     return asked
 
 
