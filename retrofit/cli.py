@@ -159,6 +159,7 @@ def main() -> None:
     retrofit compare plant.toml     compare the candidates in the terminal
     retrofit report plant.toml      write the report: HTML, PDF, spreadsheet
     retrofit rerun plant.html       compute a report again
+    retrofit meeting plant.toml     open a page to change it together
     retrofit commission plant.toml R448A   print a job card for the site
     """
 
@@ -337,6 +338,22 @@ def commission(
     path = output or Path(f"{case_file.stem}-{name}.html")
     write_report(path, html)
     click.echo(f"Wrote {path}. Print it from a browser and take it to the plant.")
+
+
+@main.command()
+@click.argument("case_file", type=CASE, metavar="CASE")
+@units_option
+@on_option
+@click.option("--port", type=click.IntRange(0, 65535), default=0, help="Port of 127.0.0.1; any free one if left out.")
+@click.option("--no-browser", is_flag=True, help="Only say where the page is.")
+@_guarded
+def meeting(case_file: Path, units: str, on: datetime | None, port: int, no_browser: bool) -> None:
+    """Open a page on this machine to change a CASE together, and freeze what is decided."""
+    from retrofit.meeting import session_of
+    from retrofit.meeting.server import serve
+
+    session = session_of(case_file, units, on.date() if on else None)
+    serve(session, port, not no_browser, lambda text: click.echo(text, err=True))
 
 
 @main.command()

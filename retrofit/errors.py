@@ -9,7 +9,8 @@ RetrofitError
 ├── NoSolutionError           an equation has no solution for the values given
 ├── ModelFaultError           the property model gave an answer that fails its own checks
 ├── ReportError               the report cannot be written
-└── MissingPartError          an optional part of the installation is not there
+├── MissingPartError          an optional part of the installation is not there
+└── PortError                 the meeting page cannot have its port
 
 A message says what is wrong, the value and unit given, what is allowed, and what to do next.
 """
@@ -118,3 +119,9 @@ class MissingPartError(RetrofitError):
 
     slug = "missing-part"
     exit_code = 2
+
+
+class PortError(RetrofitError):
+    """The meeting page cannot have its port."""
+
+    slug = "port"

@@ -29,7 +29,7 @@ ENTRIES = ("__init__", "__main__")  # the door of the package and the way to run
 DOOR = ("retrofit", "retrofit.__version__")
 FILES = sorted(PACKAGE.rglob("*.py"))
 # Slow to load, so imported inside the functions that need them.
-SLOW = ("CoolProp", "matplotlib", "scipy", "jinja2")
+SLOW = ("CoolProp", "matplotlib", "scipy", "jinja2", "flask", "werkzeug")
 
 
 def _room(path):

@@ -7,6 +7,7 @@ from retrofit.case.compressor import Compressor, Polynomial
 from retrofit.case.emissions import EDITIONS, Emissions, GridYear, TopUp
 from retrofit.case.exchangers import Condenser, Evaporator, Exchanger
 from retrofit.case.keys import meaning, quantity
+from retrofit.case.laid import as_key, as_text, as_toml, as_value, laid_over
 from retrofit.case.law import EQUIPMENT, Law
 from retrofit.case.logo import Logo
 from retrofit.case.model import Case, Default
@@ -16,7 +17,7 @@ from retrofit.case.paper import Report, Revision
 from retrofit.case.pipework import GasLine, Lines, LiquidLine, Receiver, Valve
 from retrofit.case.plant import Compare, Duty, Plant
 from retrofit.case.plus_minus import PlusMinus
-from retrofit.case.reader import read_case
+from retrofit.case.reader import case_from_data, read_case
 from retrofit.case.readings import Controls, Readings
 from retrofit.case.room import MachineryRoom, Room
 from retrofit.case.schema import SCHEMA_FILE, case_schema
@@ -67,7 +68,13 @@ __all__ = [
     "TopUp",
     "Valve",
     "Year",
+    "as_key",
+    "as_text",
+    "as_toml",
+    "as_value",
+    "case_from_data",
     "case_schema",
+    "laid_over",
     "meaning",
     "new_case_text",
     "quantity",

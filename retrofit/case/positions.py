@@ -40,12 +40,26 @@ def key_lines(text: str) -> dict[KeyPath, int]:
     return scanner.lines
 
 
+def value_spans(text: str) -> dict[KeyPath, tuple[int, int]]:
+    """Return from where to where the value of each key of a TOML text stands.
+
+    Args:
+        text: A text that `tomllib.loads` accepts, with plain line ends. [-]
+    Returns: First position and the one after the last, by path. [-]
+    Raises: RecursionError if values are nested deeper than Python's stack.
+    """
+    scanner = _Scanner(text)
+    scanner.scan()
+    return scanner.spans
+
+
 class _Scanner:
     def __init__(self, text: str) -> None:
         self.text = text
         self.at = 0
         self.starts = [0, *(match.end() for match in re.finditer("\n", text))]
         self.lines: dict[KeyPath, int] = {(): 1}
+        self.spans: dict[KeyPath, tuple[int, int]] = {}
         self.items: dict[KeyPath, int] = {}  # length so far of each array of tables
 
     def scan(self) -> None:
@@ -113,8 +127,13 @@ class _Scanner:
         self.value(path)
 
     def value(self, path: KeyPath) -> None:
-        """Step over a value, noting the keys and items inside it."""
+        """Step over a value, noting where it stands and the keys and items inside it."""
         self.skip_gap()
+        start = self.at
+        self.step_value(path)
+        self.spans[path] = start, start + len(self.text[start : self.at].rstrip())
+
+    def step_value(self, path: KeyPath) -> None:
         opening = self.text[self.at]
         if opening == "[":
             self.array(path)

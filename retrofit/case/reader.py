@@ -44,6 +44,23 @@ def read_case(path: str | os.PathLike[str]) -> Case:
     name = shown(os.fspath(path), LONGEST_PATH)
     text = text_of(os.fspath(path), name)
     data, lines = parsed(text, name)
+    return case_from_data(data, path, text, lines)
+
+
+def case_from_data(
+    data: Mapping[str, Any], path: str | os.PathLike[str], text: str, lines: Mapping[KeyPath, int] | None = None
+) -> Case:
+    """Return the case that parsed TOML describes: of a file, or of one with changes laid over it.
+
+    Args:
+        data: The parsed TOML. [-]
+        path: The file: what it names stands beside it. [-]
+        text: Its content. [-]
+        lines: The line of each path, as `key_lines` gives them; None if there are none to name. [-]
+    Returns: The case in SI, with what was written and every default taken.
+    Raises: CaseFileError with every problem found; each names its key.
+    """
+    name = shown(os.fspath(path), LONGEST_PATH)
     written = Written(data)
     heats = tuple(_medium_heats(written))
     context = {"p_ambient_Pa": written.p_ambient_Pa, "folder": Path(path).parent}
@@ -55,7 +72,8 @@ def read_case(path: str | os.PathLike[str]) -> Case:
         problems += [(tuple(found["loc"]), complaint(found)) for found in error.errors(include_url=False)]
         model = None
     if problems or outdoors.problems or model is None:
-        raise CaseFileError(name, [*(_located(where, text, lines) for where, text in problems), *outdoors.problems])
+        found = [_located(where, said, lines or {}) for where, said in problems]
+        raise CaseFileError(name, [*found, *outdoors.problems])
     defaults = (*_defaults(model), *heats)
     return replace(
         _case(model, data, name, text, defaults),

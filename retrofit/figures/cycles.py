@@ -26,14 +26,27 @@ def overlay_charts(comparison: Comparison, units: UnitSystem) -> tuple[Drawing, 
     Returns: One chart for up to six candidates, else several, each with the existing one; candidates whose cycles
             are far wider have one of their own; none if nothing was computed.
     """
+    return tuple(_overlay(comparison, group, units, number) for number, group in enumerate(_groups(comparison)))
+
+
+def overlay_count(comparison: Comparison) -> int:
+    """Return how many charts `overlay_charts` draws of a result, without drawing them. [-]
+
+    Args:
+        comparison: The result.
+    """
+    return len(_groups(comparison))
+
+
+def _groups(comparison: Comparison) -> list[list[Placed]]:
+    """Return what stands in each chart: the existing refrigerant with some candidates."""
     solved = [(place, entry) for place, entry in enumerate(comparison.entries) if entry.lines is not None]
     if not solved:
-        return ()
+        return []
     existing, candidates = solved[:1], solved[1:]
     if existing[0][0] != 0:
         existing, candidates = [], solved
-    groups = [existing + part for part in _parts(candidates, existing)] or [existing]
-    return tuple(_overlay(comparison, group, units, number) for number, group in enumerate(groups))
+    return [existing + part for part in _parts(candidates, existing)] or [existing]
 
 
 def _parts(candidates: list[Placed], existing: list[Placed]) -> list[list[Placed]]:

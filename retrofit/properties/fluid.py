@@ -327,6 +327,8 @@ class Fluid:
         """Return `value` as an array if it lies in the range; else raise, or put NaN where it does not."""
         given = np.asarray(value, dtype=float)
         least, most = np.asarray(low, dtype=float), np.asarray(high, dtype=float)
+        if (given >= least).all() and (given <= most).all():  # as nearly always
+            return given + 0.0 * most if most.ndim else given
         slack = ENDS * np.maximum(np.abs(most), 1.0)
         outside = (given < least - slack) | (given > most + slack) | np.isnan(given)
         kept: FloatArray = np.minimum(np.maximum(given, least), most)

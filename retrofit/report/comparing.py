@@ -114,13 +114,16 @@ def _temperatures(comparison: Comparison, units: UnitSystem) -> tuple[Row, ...]:
 
 
 def _discharge_change(comparison: Comparison, units: UnitSystem) -> Row:
-    texts = []
+    texts, rises, bands = [], [], []
     for entry in comparison.entries:
         rise = None if entry is comparison.existing else entry.T_discharge_difference_K
         text = units.text("temperature difference", rise, decimals=0, signed=True)
         band = pair_band(comparison.existing, entry, "T_discharge")
         texts.append(near(text) if rise is not None and abs(rise) <= band else text)
-    return number_row("Discharge against today", units.label("temperature difference"), texts)
+        rises.append(rise)
+        bands.append(band)
+    kind = "temperature difference"
+    return number_row("Discharge against today", units.label(kind), texts, kind, rises, bands)
 
 
 def _specific(comparison: Comparison, units: UnitSystem) -> tuple[Row, ...]:

@@ -95,7 +95,7 @@ def hardware(comparison: Comparison, units: UnitSystem) -> Hardware:
     """
     blocks = [_block(comparison, code, units) for code in component_names(comparison)]
     return Hardware(
-        _matrices(comparison),
+        matrices(comparison),
         tuple(block for block in blocks if block.lines),
         tuple(block for block in blocks if not block.lines),
         _settings(comparison, units),
@@ -124,7 +124,12 @@ def verdict_words(entry: Entry, codes: Sequence[str]) -> tuple[str, ...]:
     return tuple(found.get(code, MISSING if is_today else NOT_JUDGED) for code in codes)
 
 
-def _matrices(comparison: Comparison) -> tuple[Matrix, ...]:
+def matrices(comparison: Comparison) -> tuple[Matrix, ...]:
+    """Return the verdicts of the components, spread over as many tables as it takes; none if nothing was judged.
+
+    Args:
+        comparison: An assessed result.
+    """
     names = component_names(comparison)
     if not names:
         return ()

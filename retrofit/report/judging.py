@@ -147,7 +147,7 @@ def reasons(entry: Entry) -> str:
         entry: An assessed refrigerant.
     """
     for level in ("stop", "unknown", "work"):
-        titles = [spelled(finding.title) for finding in entry.findings if finding.level == level]
+        titles = dict.fromkeys(spelled(finding.title) for finding in entry.findings if finding.level == level)
         if titles:
             return "; ".join(titles)
     return "nothing found by the checks made here"

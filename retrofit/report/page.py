@@ -133,7 +133,7 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
         title=plain(case.title),
         title_css=css_string(plain(case.title)),
         about=plain(case.about or ""),
-        facts=_facts(comparison, units),
+        facts=facts(comparison, units),
         units=SYSTEM_WORDS[units.name],
         made_at=time_text(made_at),
         case_file=plain(PurePath(case.path).name),
@@ -143,7 +143,7 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
         number={place.name: place.number for place in (*main, *detail)},
         where={place.name: place.words for place in (*main, *detail)},
         front=front(comparison, units),
-        answer=_answer(comparison, units),
+        answer=answered(comparison, units),
         convention=convention(comparison),
         band=band_text(comparison, units),
         judged=tuple(candidates),
@@ -187,7 +187,13 @@ def css_string(text: str) -> str:
     return "".join(c if c.isascii() and c.isalnum() else f"\\{ord(c):x} " for c in text)
 
 
-def _answer(comparison: Comparison, units: UnitSystem) -> Answered:
+def answered(comparison: Comparison, units: UnitSystem) -> Answered:
+    """Return the answer of a result in words.
+
+    Args:
+        comparison: An assessed result.
+        units: The reader's units.
+    """
     found = answer(comparison, units)
     matters = tuple(
         (spelled(matter.about), tuple((spelled(words), tuple(map(spelled, names))) for words, names in matter.groups))
@@ -197,7 +203,13 @@ def _answer(comparison: Comparison, units: UnitSystem) -> Answered:
     return Answered(spelled(found.question), spelled(found.headline), matters, remarks)
 
 
-def _facts(comparison: Comparison, units: UnitSystem) -> tuple[tuple[str, str], ...]:
+def facts(comparison: Comparison, units: UnitSystem) -> tuple[tuple[str, str], ...]:
+    """Return the few numbers that say which plant this is, each with its label.
+
+    Args:
+        comparison: A result.
+        units: The reader's units.
+    """
     case: Case = comparison.case
     reading = {"dew": "dew point", "mean": "mean"}[case.duty.reading]
     charge = case.plant.charge_kg

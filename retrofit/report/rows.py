@@ -20,8 +20,9 @@ def quantity_row(label: str, kind: str, values: list[float | None], units: UnitS
         units: The reader's units.
     """
     if kind == "heat flow":  # in Btu/h its usual form has six digits, of which the model knows two
-        return number_row(label, units.label(kind), [_four_digits(kind, value, units) for value in values])
-    return number_row(label, units.label(kind), units.column(kind, values))
+        texts = [_four_digits(kind, value, units) for value in values]
+        return number_row(label, units.label(kind), texts, kind, values)
+    return number_row(label, units.label(kind), units.column(kind, values), kind, values)
 
 
 def _four_digits(kind: str, value: float | None, units: UnitSystem) -> str:
@@ -40,11 +41,10 @@ def change_row(label: str, comparison: Comparison, ratio: str, band: str) -> Row
         ratio: Name of the ratio to today.
         band: Name of the band of the model that it is held against, the wider of today's and the refrigerant's own.
     """
-    texts = [
-        change_text(entry.relative.get(ratio), pair_band(comparison.existing, entry, band))
-        for entry in comparison.entries
-    ]
-    return number_row(label, PERCENT, texts)
+    ratios = [entry.relative.get(ratio) for entry in comparison.entries]
+    bands = [pair_band(comparison.existing, entry, band) for entry in comparison.entries]
+    texts = [change_text(found, width) for found, width in zip(ratios, bands, strict=True)]
+    return number_row(label, PERCENT, texts, "change", ratios, bands)
 
 
 def change_text(ratio: float | None, band: float) -> str:

@@ -63,6 +63,16 @@ def _portrait(comparison: Comparison, place: int, units: UnitSystem) -> Portrait
     )
 
 
+def state_table(entry: Entry, units: UnitSystem) -> StateTable:
+    """Return the state points of a refrigerant that was computed, as texts.
+
+    Args:
+        entry: The refrigerant.
+        units: The reader's units.
+    """
+    return _table(entry, on_reference(entry, units), units)
+
+
 def on_reference(entry: Entry, units: UnitSystem) -> tuple[dict[str, float | None], ...]:
     """Return the points with enthalpy and entropy counted from the reference of the reader's units."""
     assert entry.lines is not None

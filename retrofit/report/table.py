@@ -11,20 +11,24 @@ NOT_STATED = "not stated"
 
 @dataclass(frozen=True)
 class Cell:
-    """One cell: its text, whether it is a number, and the letters of its notes."""
+    """One cell: its text, whether it is a number, the letters of its notes, and where its origin is told, if at all."""
 
     text: str
     is_number: bool = True
     marks: tuple[str, ...] = ()
+    href: str = ""
 
 
 @dataclass(frozen=True)
 class Row:
-    """One quantity with its unit, and a cell for each refrigerant."""
+    """One quantity with its unit, and a cell for each refrigerant; of numbers also their kind and the values in SI."""
 
     label: str
     unit: str
     cells: tuple[Cell, ...]
+    kind: str = ""
+    values: tuple[float | None, ...] = ()
+    bands: tuple[float, ...] = ()
 
 
 @dataclass(frozen=True)
@@ -87,9 +91,25 @@ def _letters(place: int) -> str:
     return (_letters(turn - 1) if turn else "") + "abcdefghijklmnopqrstuvwxyz"[letter]
 
 
-def number_row(label: str, unit: str, texts: Sequence[str]) -> Row:
-    """Return a row of numbers, already texts."""
-    return Row(label, unit, tuple(Cell(text) for text in texts))
+def number_row(
+    label: str,
+    unit: str,
+    texts: Sequence[str],
+    kind: str = "",
+    values: Sequence[float | None] = (),
+    bands: Sequence[float] = (),
+) -> Row:
+    """Return a row of numbers, already texts.
+
+    Args:
+        label: What they are.
+        unit: Their unit. [-]
+        texts: One for each refrigerant. [-]
+        kind: Their kind of quantity; "change" for a ratio to today. [-]
+        values: The numbers themselves. [SI]
+        bands: Half the band of the model that each change is held against. [-]
+    """
+    return Row(label, unit, tuple(Cell(text) for text in texts), kind, tuple(values), tuple(bands))
 
 
 def word_row(label: str, texts: Iterable[str]) -> Row:

@@ -6,8 +6,10 @@ The block of cautions is always filled from the built-in template, whatever the 
 from __future__ import annotations
 
 import traceback
+from collections.abc import Mapping
+from functools import cache
 from pathlib import Path
-from typing import TYPE_CHECKING, Any
+from typing import TYPE_CHECKING, Any, Protocol
 
 import retrofit
 from retrofit.errors import ReportError
@@ -16,6 +18,7 @@ from retrofit.units import shown
 if TYPE_CHECKING:
     from markupsafe import Markup
 
+    from retrofit.report.cautioning import CautionGroup
     from retrofit.report.page import Page
     from retrofit.report.site_copy import SiteCopy
 
@@ -35,11 +38,52 @@ def built_in_folder() -> Path:
     raise ReportError(f"the templates of the report are missing: no {FOLDER}/{PAGE}; install the package again")
 
 
-def render_cautions(page: Page | SiteCopy) -> Markup:
+class Cautioned(Protocol):
+    """What the block of cautions is made from: a page, of the report or of a meeting."""
+
+    @property
+    def deference(self) -> str:
+        """Return who decides."""
+
+    @property
+    def cautions(self) -> tuple[CautionGroup, ...]:
+        """Return every caution, by safety class."""
+
+    @property
+    def number(self) -> Mapping[str, str]:
+        """Return the numbers of the sections, by id."""
+
+
+def render_cautions(page: Cautioned) -> Markup:
     """Return the block of cautions, from the built-in template alone."""
     from markupsafe import Markup
 
     return Markup(_environment(None).get_template(CAUTIONS).render(page=page))
+
+
+def filled(name: str, **values: object) -> str:
+    """Return a built-in template with values in it, as the meeting page needs.
+
+    Args:
+        name: File name of the template. [-]
+        values: What it shows, by name. [-]
+    """
+    return str(_own_environment().get_template(name).render(**values))
+
+
+@cache
+def _own_environment() -> Any:
+    """Return the environment of templates that are all our own: no sandbox, which doubles the time."""
+    from jinja2 import Environment, FileSystemLoader, StrictUndefined
+
+    return Environment(
+        loader=FileSystemLoader(str(built_in_folder())),
+        autoescape=True,
+        undefined=StrictUndefined,
+        trim_blocks=True,
+        lstrip_blocks=True,
+        auto_reload=False,
+    )
 
 
 def render_page(page: Page | SiteCopy, cautions: Markup, template_folder: Path | None) -> str:
@@ -80,6 +124,7 @@ def _filled(folder: Path | None, page: Page | SiteCopy, cautions: Markup) -> str
     return str(_environment(folder).get_template(page.template).render(page=page, cautions=cautions))
 
 
+@cache
 def _environment(folder: Path | None) -> Any:
     from jinja2 import ChoiceLoader, FileSystemLoader, StrictUndefined
     from jinja2.sandbox import ImmutableSandboxedEnvironment

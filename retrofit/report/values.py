@@ -78,7 +78,8 @@ def value_row(
     label: str, unit: str, entries: Sequence[Entry], field: str, notes: Notes, show: Callable[[object], str]
 ) -> Row:
     """Return a row of catalogue values; what is doubtful about one goes to a note beside it."""
-    return Row(label, unit, tuple(_cell(entry.refrigerant, field, notes, show) for entry in entries))
+    cells = tuple(_cell(entry.refrigerant, field, notes, show) for entry in entries)
+    return Row(label, unit, cells, f"catalogue {field}")
 
 
 def _cell(refrigerant: Refrigerant, field: str, notes: Notes, show: Callable[[object], str]) -> Cell:

@@ -16,6 +16,7 @@ from retrofit.properties import Fluid, fluid, grade
 from retrofit.refrigerants import Refrigerant, cautions_for, change_cautions, find
 from retrofit.study.baseline import baseline, case_with_readings
 from retrofit.study.hardware import run as hardware
+from retrofit.study.hardware.conditions import hottest_inlet_K
 from retrofit.study.installed import run_installed
 from retrofit.study.lines import chart_lines
 from retrofit.study.performance import as_numbers, at_swept_volume, performance
@@ -104,7 +105,7 @@ def _solved(today: Today, entry: Entry, behaviour: Fluid) -> Entry:
     installed, reason = None, today.plant_reason
     if today.plant is not None:
         try:
-            installed = run_installed(today.plant, behaviour)
+            installed = run_installed(today.plant, behaviour, hottest_inlet_K(today.case))
         except NoSolutionError as error:
             reason = error.message
     covered = bool(today.model.covers(cycle.pressure_ratio, cycle.p_suction_Pa))

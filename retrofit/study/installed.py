@@ -181,19 +181,30 @@ def _exchanger(name: str, table: ExchangerTable | None, heat_W: FloatArray) -> E
     return Exchanger(1.0, Secondary(table.inlet_K, rate), table.arrangement)
 
 
-def run_installed(plant: ExistingPlant, behaviour: Fluid) -> Installed:
+def run_installed(plant: ExistingPlant, behaviour: Fluid, T_hottest_K: float | None = None) -> Installed:
     """Return what the existing plant does with a refrigerant.
 
     Args:
         plant: The plant as installed.
         behaviour: The refrigerant.
-    Returns: Full speed, the same cooling, and how the plant meets its duty.
+        T_hottest_K: At the inlet of the condenser on the hottest day; None if that is not known. [K]
+    Returns: Full speed, the same cooling, how the plant meets its duty, and the hottest day.
     Raises: NoSolutionError with the reason if the plant does not balance.
     """
     factors = _film_factors(plant.case, behaviour.designation)
-    # At full with the films of the case; the same cooling; and at full with equal films, to show what they do.
-    machine = _with_films(plant.machine, np.array([[factors[0]] * 2 + [1.0], [factors[1]] * 2 + [1.0]]))
-    found = balance(behaviour, machine, *plant.start_K, np.array([np.nan, plant.today_W, np.nan]))
+    # At full with the films of the case; the same cooling; at full with equal films, to show what they do; and at
+    # full on the hottest day: all in one, since few conditions take as long as one.
+    machine = _with_films(
+        plant.machine, np.array([[*[factor] * 2, 1.0, factor][: 3 if T_hottest_K is None else 4] for factor in factors])
+    )
+    cooling, starts = [np.nan, float(plant.today_W), np.nan], plant.start_K
+    if T_hottest_K is not None:
+        usual_K = float(np.asarray(machine.condenser.secondary.T_in_K))
+        inlets = np.array([usual_K] * 3 + [T_hottest_K])
+        secondary = replace(machine.condenser.secondary, T_in_K=inlets)
+        machine = replace(machine, condenser=replace(machine.condenser, secondary=secondary))
+        cooling, starts = [*cooling, np.nan], (starts[0], starts[1] + inlets - usual_K)
+    found = balance(behaviour, machine, *starts, np.array(cooling))
     for reason in found.reason[:2]:
         if reason:
             raise NoSolutionError(f"{behaviour.designation} in the plant as installed: {reason}")
@@ -210,6 +221,8 @@ def run_installed(plant: ExistingPlant, behaviour: Fluid) -> Installed:
         cooling_with_equal_films_W=float(every.cooling_W[2]),
         conductances_W_per_K=(float(np.asarray(conductances[0])[0]), float(np.asarray(conductances[1])[0])),
         residual=float(found.residual[:2].max()),
+        hottest=as_numbers(every, 3) if T_hottest_K is not None and not found.reason[3] else None,
+        hottest_reason=str(found.reason[3]) if T_hottest_K is not None else "",
     )
 
 

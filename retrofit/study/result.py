@@ -101,6 +101,8 @@ class Installed:
         cooling_with_equal_films_W: Cooling at full with both factors 1: what the factors do.
         conductances_W_per_K: Conductance of evaporator and condenser.
         residual: Largest relative error of the balance.
+        hottest: At full on the hottest day; None if its temperature is not known or the plant does not balance there.
+        hottest_reason: Why it does not balance there.
     """
 
     full: Performance[float]
@@ -111,6 +113,8 @@ class Installed:
     cooling_with_equal_films_W: float
     conductances_W_per_K: tuple[float, float]
     residual: float
+    hottest: Performance[float] | None = None
+    hottest_reason: str = ""
 
 
 @dataclass(frozen=True)

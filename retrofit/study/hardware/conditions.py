@@ -12,9 +12,9 @@ from retrofit.cycle import Cycle, Settings, Temperatures, matched_pressures, sol
 from retrofit.equipment.vessels import standstill
 from retrofit.errors import NoSolutionError, OutsideValidRangeError
 from retrofit.properties import Fluid
-from retrofit.study.installed import EfficiencyModel, ExistingPlant, run_at_condenser_inlet
+from retrofit.study.installed import EfficiencyModel, ExistingPlant
 from retrofit.study.performance import as_numbers, at_swept_volume, performance
-from retrofit.study.result import Performance
+from retrofit.study.result import Installed, Performance
 
 KELVIN = 273.15
 
@@ -67,27 +67,40 @@ def cycle_between(
     return solve_cycle(behaviour, p_evap_Pa, p_cond_Pa, own)
 
 
-def hottest_day(site: Site, behaviour: Fluid, basis: str) -> Found:
+def hottest_day(site: Site, behaviour: Fluid, installed: Installed | None) -> Found:
     """Return the plant on the hottest day: balanced there, or with condensing as much warmer as the air.
 
     Args:
         site: The plant and what is held equal.
         behaviour: The refrigerant.
-        basis: "plant" or "compressor".
+        installed: What the plant as installed does with it, run with the inlet of the hottest day; None to take
+            the temperatures held equal.
     """
     reason = _no_hottest_day(site.case)
-    if reason:
+    inlet_K = hottest_inlet_K(site.case)
+    if reason or inlet_K is None:
         return Found(None, reason)
-    assert site.case.condenser
-    assert site.case.condenser.inlet_K
-    assert site.case.plant.highest_ambient_K
-    inlet_K = max(site.case.condenser.inlet_K, site.case.plant.highest_ambient_K)
     try:
-        if basis == "plant" and site.plant is not None:
-            return Found(run_at_condenser_inlet(site.plant, behaviour, inlet_K))
-        return Found(_warmer_condensing(site, behaviour, inlet_K - site.case.condenser.inlet_K))
+        if installed is None:
+            assert site.case.condenser
+            assert site.case.condenser.inlet_K
+            return Found(_warmer_condensing(site, behaviour, inlet_K - site.case.condenser.inlet_K))
+        if installed.hottest is None:
+            raise NoSolutionError(f"{behaviour.designation} in the plant as installed: {installed.hottest_reason}")
+        return Found(installed.hottest)
     except (NoSolutionError, OutsideValidRangeError) as error:
         return Found(None, f"with {inlet_K - KELVIN:.0f} °C at the condenser there is no solution: {error.message}")
+
+
+def hottest_inlet_K(case: Case) -> float | None:
+    """Return the temperature at the inlet of the condenser on the hottest day; None if it is not known. [K]
+
+    Args:
+        case: The case.
+    """
+    if _no_hottest_day(case) or case.condenser is None:
+        return None
+    return max(case.condenser.inlet_K or 0.0, case.plant.highest_ambient_K or 0.0)
 
 
 def _no_hottest_day(case: Case) -> str:

@@ -105,7 +105,10 @@ def _side(site: Site, behaviour: Fluid, entry: Entry, basis: str) -> Side:
     """Return what the components see with a refrigerant."""
     design = entry.plant.full if basis == "plant" and entry.plant else entry.compressor
     assert design is not None
-    hottest, highest = hottest_day(site, behaviour, basis), pull_down(site, behaviour, design)
+    hottest, highest = (
+        hottest_day(site, behaviour, entry.plant if basis == "plant" else None),
+        pull_down(site, behaviour, design),
+    )
     p_rest, no_rest = standstill_pressure(site.case, behaviour)
     inside, lines = behaviour.as_lenient(), site.case.lines
     liquid = inside.liquid(design.p_cond_Pa, site.settings.subcooling_K)

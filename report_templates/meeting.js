@@ -1,0 +1,149 @@
+// The meeting page's own script: posts forms without leaving the page, and puts the newest answer in place.
+"use strict";
+(() => {
+  const PAUSE = 200, SOON = 400, NEWS = 2000, STAYS = 6000;
+  const said = document.getElementById("said"), aside = document.getElementById("aside");
+  const board = () => document.getElementById("board");
+  const fields = (root) => root.querySelectorAll("input:not([type=hidden]), textarea, select");
+  let shown = +board().dataset.version, asking = null, timer = 0, quiet = 0, waiting = null, sent = new Map();
+
+  const isDirty = (field) => field.tagName === "SELECT"
+    ? [...field.options].some((option) => option.selected !== option.defaultSelected) : field.value !== field.defaultValue;
+
+  function say(text) {
+    said.textContent = text;
+    clearTimeout(quiet);
+    quiet = setTimeout(() => { said.textContent = ""; }, STAYS);
+  }
+
+  async function ask(url, options) {
+    const mine = asking = new AbortController();
+    try {
+      const answer = await fetch(url, { ...options, signal: mine.signal, headers: { "X-Part": "1" } });
+      if (answer.status === 204) return;
+      const text = await answer.text();
+      if (!answer.ok) say(text);
+      else if (mine === asking) put(text);
+    } catch (error) {
+      if (error.name !== "AbortError") say("No answer: the meeting has ended on this machine. What is shown is the last answer.");
+    } finally {
+      if (mine === asking) asking = null;
+    }
+  }
+
+  function post(form, button) {
+    clearTimeout(timer);
+    waiting = null;
+    asking?.abort();
+    sent = new Map([...fields(form)].map((field) => [field.id, field.value]));
+    ask(form.action, { method: "POST", body: new URLSearchParams(new FormData(form, button)) });
+  }
+
+  function later(form) {
+    if (waiting && waiting !== form) post(waiting);
+    clearTimeout(timer);
+    waiting = form;
+    timer = setTimeout(() => post(form), PAUSE);
+  }
+
+  // An answer older than what is shown is dropped; what was typed meanwhile stays, and goes out after it.
+  function put(html) {
+    const fresh = new DOMParser().parseFromString(html, "text/html").getElementById("board");
+    if (!fresh || +fresh.dataset.version < shown) return;
+    const old = board(), focus = mark(document.activeElement), again = carry(old, fresh);
+    carryPictures(old, fresh);
+    markMoved(old, fresh);
+    const scrolled = [...old.querySelectorAll(".scroll, .inputs")].map((box) => [box.scrollLeft, box.scrollTop]);
+    const [x, y] = [scrollX, scrollY];
+    shown = +fresh.dataset.version;
+    old.replaceWith(document.adoptNode(fresh));
+    document.documentElement.className = fresh.dataset.look;
+    const boxes = fresh.querySelectorAll(".scroll, .inputs");
+    if (boxes.length === scrolled.length) boxes.forEach((box, i) => { [box.scrollLeft, box.scrollTop] = scrolled[i]; });
+    scrollTo(x, y);
+    restore(fresh, focus);
+    say(fresh.dataset.said);
+    if (fresh.dataset.working) setTimeout(() => asking || ask(`/news?seen=${shown}`), SOON);
+    if (again) later(again);
+  }
+
+  function carry(old, fresh) {
+    let again = null;
+    for (const field of fields(old)) {
+      if (!field.id || !isDirty(field) || sent.get(field.id) === field.value) continue;
+      const place = fresh.querySelector(`#${CSS.escape(field.id)}`);
+      if (!place) continue;
+      place.value = field.value;
+      if (place.form.hasAttribute("data-live")) again = place.form;
+    }
+    return again;
+  }
+
+  function carryPictures(old, fresh) {
+    for (const picture of fresh.querySelectorAll("img.picture")) {
+      const before = old.querySelector(`#${CSS.escape(picture.id)}`), next = picture.getAttribute("src");
+      if (!before || before.getAttribute("src") === next) continue;
+      picture.src = before.getAttribute("src");
+      picture.classList.add("late");
+      const drawn = new Image();
+      drawn.onload = () => { if (picture.isConnected) { picture.src = next; picture.classList.remove("late"); } };
+      drawn.src = next;
+    }
+  }
+
+  function markMoved(old, fresh) {
+    const before = new Map([...old.querySelectorAll("td a.how, dd a.how")].map((cell) => [cell.getAttribute("href"), cell.textContent]));
+    for (const cell of fresh.querySelectorAll("td a.how, dd a.how")) {
+      const text = before.get(cell.getAttribute("href"));
+      cell.classList.toggle("moved", text !== undefined && text !== cell.textContent);
+    }
+  }
+
+  function mark(element) {
+    if (!element || !board().contains(element)) return null;
+    const range = element.selectionStart === undefined ? null : [element.selectionStart, element.selectionEnd];
+    const id = element.id ? `#${CSS.escape(element.id)}` : "", name = element.dataset.focus;
+    const href = element.getAttribute("href");
+    const path = id || (name ? `[data-focus="${name}"]` : element.value ? `button[value="${CSS.escape(element.value)}"]` : href ? `a[href="${CSS.escape(href)}"]` : "");
+    const near = element.closest("section, form[id]");
+    return { path, range, near: near ? near.id : "" };
+  }
+
+  function restore(fresh, focus) {
+    if (!focus) return;
+    const element = (focus.path && fresh.querySelector(focus.path)) || (focus.near && fresh.querySelector(`#${CSS.escape(focus.near)}-h`));
+    if (!element) return;
+    element.focus({ preventScroll: true });
+    if (focus.range && element.setSelectionRange && element.type === "text") element.setSelectionRange(...focus.range);
+  }
+
+  async function tell(href) {
+    const answer = await fetch(href, { headers: { "X-Part": "1" } });
+    const body = document.getElementById("aside-body");
+    body.replaceChildren(...new DOMParser().parseFromString(await answer.text(), "text/html").body.childNodes);
+    if (!aside.open) aside.showModal();
+    aside.scrollTop = 0;
+  }
+
+  document.addEventListener("submit", (event) => {
+    if (event.target.method !== "post") return;
+    event.preventDefault();
+    post(event.target, event.submitter);
+  });
+  document.addEventListener("input", (event) => {
+    const form = event.target.form;
+    if (form?.hasAttribute("data-live")) later(form);
+  });
+  document.addEventListener("click", (event) => {
+    const link = event.target.closest("a.how");
+    if (!link || event.ctrlKey || event.metaKey || event.shiftKey || event.button) return;
+    const href = link.getAttribute("href");
+    if (href.startsWith("#")) return;
+    event.preventDefault();
+    tell(href).catch(() => { location.href = href; });
+  });
+  setInterval(() => {
+    if (!asking && !waiting && !document.hidden && !aside.open) ask(`/news?seen=${shown}`);
+  }, NEWS);
+  if (board().dataset.working) setTimeout(() => ask(`/news?seen=${shown}`), SOON);
+})();

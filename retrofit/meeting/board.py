@@ -1,0 +1,248 @@
+"""What stands on the page, as frozen records of finished texts: the same tables and texts as the report's."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass, replace
+
+from retrofit.checks import not_checked
+from retrofit.figures import mark_of
+from retrofit.meeting.changes import MEETING
+from retrofit.meeting.desk import Source
+from retrofit.meeting.freeze import Frozen
+from retrofit.meeting.how import linked, slug
+from retrofit.meeting.inputs import Group, input_groups, offered
+from retrofit.meeting.pictures import Picture, Pictures, View
+from retrofit.meeting.session import Moment, Refused
+from retrofit.meeting.side import Side, side_by_side
+from retrofit.meeting.state import State
+from retrofit.meeting.weighing import Weighing, weighing
+from retrofit.refrigerants import designations
+from retrofit.report.banding import band_text
+from retrofit.report.cautioning import DEFERENCE, CautionGroup, caution_groups
+from retrofit.report.comparing import comparison_table, convention
+from retrofit.report.front import plain
+from retrofit.report.hardware import Matrix, matrices
+from retrofit.report.judging import Judged, judged
+from retrofit.report.page import Answered, answered, facts
+from retrofit.report.table import Cell, Table
+from retrofit.report.values import environment_table
+from retrofit.study import Comparison, Entry
+from retrofit.units import UNIT_SYSTEMS, UnitSystem
+
+# The numbers of the line-up, the first that the result has of each: the rows of the comparison they are taken from.
+HEADLINES: tuple[tuple[str, tuple[str, ...]], ...] = (
+    ("Cooling against today", ("plant-full-cooling-against-today", "compressor-cooling-against-today")),
+    ("COP against today", ("plant-full-cop-at-the-same-cooling-against-today", "efficiency-cop-against-today")),
+    ("Discharge", ("temperatures-discharge-temperature",)),
+    ("Condensing", ("pressures-condensing-pressure-gauge",)),
+    ("GWP AR5", ("is-gwp-ipcc-ar5-100-years",)),
+)
+TODAY: tuple[tuple[str, tuple[str, ...]], ...] = (
+    ("Cooling", ("plant-full-cooling-at-full", "compressor-cooling")),
+    ("COP", ("plant-full-cop-at-full", "efficiency-cop-cooling-over-compressor-power")),
+    ("Discharge", ("temperatures-discharge-temperature",)),
+    ("Condensing", ("pressures-condensing-pressure-gauge",)),
+)
+SECTIONS = {
+    "lineup": "Line-up",
+    "cautions": "Cautions",
+    "beside": "Side by side",
+    "weights": "Weights",
+    "numbers": "Numbers",
+    "charts": "Charts",
+    "hardware": "Hardware",
+    "notes": "Notes",
+    "freeze": "Freeze",
+}
+
+
+@dataclass(frozen=True)
+class Player:
+    """One refrigerant in the line-up.
+
+    Attributes:
+        designation, judged: Which, and what the checks say of it.
+        place: Where it stands among those in sight; 0 is today's.
+        cells: Its numbers, one for each headline.
+        is_pinned, is_added, is_beside: What the meeting did with it.
+        note: What the meeting noted on it.
+    """
+
+    designation: str
+    judged: Judged
+    place: int
+    marker: str
+    colour: str
+    cells: tuple[Cell, ...]
+    is_pinned: bool
+    is_added: bool
+    is_beside: bool
+    note: str
+
+
+@dataclass(frozen=True)
+class Board:
+    """Everything the page shows."""
+
+    version: int
+    large: bool
+    unit_name: str
+    title: str
+    about: str
+    case_file: str
+    facts: tuple[tuple[str, str], ...]
+    number: Mapping[str, str]
+    sections: tuple[tuple[str, str], ...]
+    working: str
+    problem: str
+    undo: str
+    redo: str
+    is_changed: bool
+    groups: tuple[Group, ...]
+    refused: Mapping[str, Refused]
+    complaints: tuple[str, ...]
+    answer: Answered
+    convention: str
+    band: str
+    headlines: tuple[tuple[str, str], ...]
+    today: tuple[tuple[str, str, Cell], ...]
+    players: tuple[Player, ...]
+    hidden: tuple[tuple[str, Judged], ...]
+    catalogue: tuple[str, ...]
+    deference: str
+    cautions: tuple[CautionGroup, ...]
+    beside: tuple[str, ...]
+    side: Side | None
+    weighing: Weighing
+    comparison: Table
+    environment: Table
+    pictures: tuple[Picture, ...]
+    matrices: tuple[Matrix, ...]
+    notes: tuple[tuple[str, str, str], ...]
+    frozen: tuple[Frozen, ...]
+    not_checked: tuple[str, ...]
+
+
+def in_sight(comparison: Comparison, state: State) -> Comparison:
+    """Return the result with the candidates that are shown, pinned ones first; no number changes.
+
+    Args:
+        comparison: The whole result.
+        state: The state.
+    """
+    by_name = {entry.refrigerant.designation: entry for entry in comparison.candidates}
+    order = [name for name in (*state.pinned, *by_name) if name in by_name and name not in state.hidden]
+    return replace(comparison, candidates=tuple(by_name[name] for name in dict.fromkeys(order)))
+
+
+def tables(view: Comparison, units: UnitSystem) -> tuple[Table, Table]:
+    """Return the tables of the report for what is in sight, each cell with where its origin is told.
+
+    Args:
+        view: What is in sight.
+        units: The reader's units.
+    """
+    names = tuple(entry.refrigerant.designation for entry in view.entries)
+    return linked(comparison_table(view, units), names), linked(environment_table(view, units), names)
+
+
+def build_board(moment: Moment, source: Source, pictures: Pictures) -> Board:
+    """Return everything the page shows at a moment.
+
+    Args:
+        moment: State and result.
+        source: The case file the meeting began with.
+        pictures: Where charts are drawn.
+    """
+    state, outcome, whole = moment.state, moment.outcome, moment.outcome.comparison
+    units, view = UNIT_SYSTEMS[state.units], in_sight(whole, state)
+    every, _ = judged(whole)
+    by_name = {e.refrigerant.designation: item for e, item in zip(whole.entries, every, strict=True)}
+    comparison, environment = tables(view, units)
+    keys = offered(source.data)
+    known = {*keys, "designation", "freeze"}  # inputs that show by themselves what is wrong
+    return Board(
+        version=moment.version,
+        large=state.is_large,
+        unit_name=state.units,
+        title=plain(whole.case.title),
+        about=plain(whole.case.about or ""),
+        case_file=plain(whole.case.path.replace("\\", "/").rpartition("/")[2]),
+        facts=facts(whole, units),
+        number={name: str(place) for place, name in enumerate(SECTIONS, start=1)},
+        sections=tuple(SECTIONS.items()),
+        working=outcome.working,
+        problem=outcome.problem,
+        undo=moment.undo,
+        redo=moment.redo,
+        is_changed=bool(state.changes),
+        groups=input_groups(moment, whole.case, source, keys, units),
+        refused=moment.refused,
+        complaints=tuple(item.why for field, item in moment.refused.items() if field not in known),
+        answer=answered(view, units),
+        convention=convention(whole),
+        band=band_text(view, units),
+        headlines=_headings(comparison, HEADLINES),
+        today=_today(comparison),
+        players=_players(view, state, by_name, comparison),
+        hidden=tuple((name, by_name[name]) for name in state.hidden if name in by_name),
+        catalogue=tuple(name for name in designations() if name not in by_name),
+        deference=DEFERENCE,
+        cautions=caution_groups(view),
+        beside=state.beside,
+        side=side_by_side(view, state.beside, comparison, units),
+        weighing=weighing(view, state),
+        comparison=comparison,
+        environment=environment,
+        pictures=pictures.pictures(state, View(view, state.units)) if outcome.is_current else (),
+        matrices=matrices(view),
+        notes=_notes(whole, state),
+        frozen=moment.frozen,
+        not_checked=not_checked(view),
+    )
+
+
+def _row_of(table: Table, names: tuple[str, ...]) -> tuple[str, str, tuple[Cell, ...]] | None:
+    """Return slug, unit and cells of the first of some rows that a table has."""
+    rows = {slug(group, row): row for group in table.groups for row in group.rows}
+    return next(((name, rows[name].unit, rows[name].cells) for name in names if name in rows), None)
+
+
+def _headings(table: Table, wanted: tuple[tuple[str, tuple[str, ...]], ...]) -> tuple[tuple[str, str], ...]:
+    found = ((label, _row_of(table, names)) for label, names in wanted)
+    return tuple((label, row[1]) for label, row in found if row)
+
+
+def _today(table: Table) -> tuple[tuple[str, str, Cell], ...]:
+    found = ((label, _row_of(table, names)) for label, names in TODAY)
+    return tuple((label, row[1], row[2][0]) for label, row in found if row)
+
+
+def _players(view: Comparison, state: State, by_name: Mapping[str, Judged], table: Table) -> tuple[Player, ...]:
+    rows = [row[2] for _, names in HEADLINES if (row := _row_of(table, names))]
+    notes = dict(state.notes)
+
+    def player(place: int, entry: Entry) -> Player:
+        name, mark = entry.refrigerant.designation, mark_of(place)
+        return Player(
+            designation=name,
+            judged=by_name[name],
+            place=place,
+            marker=mark.marker,
+            colour="currentColor" if place == 0 else mark.colour,
+            cells=tuple(cells[place] for cells in rows),
+            is_pinned=name in state.pinned,
+            is_added=name in state.added,
+            is_beside=name in state.beside,
+            note=notes.get(name, ""),
+        )
+
+    return tuple(player(place, entry) for place, entry in enumerate(view.entries))
+
+
+def _notes(comparison: Comparison, state: State) -> tuple[tuple[str, str, str], ...]:
+    """Return what notes can be about: name of the field, label, and text."""
+    notes = dict(state.notes)
+    named = [(e.refrigerant.designation, e.refrigerant.display_name) for e in comparison.entries]
+    return tuple((name, label, notes.get(name, "")) for name, label in ((MEETING, "The meeting"), *named))

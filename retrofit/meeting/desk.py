@@ -1,0 +1,148 @@
+"""Where results are made: one at a time, the newest asked for first, each kept for when it is asked for again."""
+
+from __future__ import annotations
+
+import datetime
+import threading
+import time
+from collections import OrderedDict
+from collections.abc import Mapping
+from dataclasses import dataclass
+from typing import Any
+
+from retrofit.case import Case, as_text, case_from_data, laid_over
+from retrofit.checks import assess
+from retrofit.errors import RetrofitError
+from retrofit.meeting.state import State
+from retrofit.study import Comparison, compare
+
+MOST_RESULTS = 40
+PATIENCE_S = 0.8  # what takes longer is shown as under way
+
+Physics = tuple[tuple[tuple[str, str], ...], tuple[str, ...]]
+
+
+@dataclass(frozen=True)
+class Source:
+    """The case file as it was when the meeting began.
+
+    Attributes:
+        case: As read.
+        data: Its parsed TOML.
+        on: The day to read the tables of law for; None for today.
+    """
+
+    case: Case
+    data: Mapping[str, Any]
+    on: datetime.date | None = None
+
+    def text_of(self, key: str) -> str:
+        """Return what the file says under a full key, as it would be written again; empty if nothing.
+
+        Args:
+            key: Full key. [-]
+        """
+        node: Any = self.data
+        for part in key.split("."):
+            node = node.get(part) if isinstance(node, Mapping) else None
+        return "" if node is None else as_text(node)
+
+    def case_with(self, physics: Physics) -> Case:
+        """Return the case with changes laid over it; raises CaseFileError if they do not fit."""
+        changes, added = physics
+        return case_from_data(laid_over(self.data, dict(changes), added), self.case.path, self.case.text)
+
+
+@dataclass(frozen=True)
+class Outcome:
+    """What there is to show for a state.
+
+    Attributes:
+        comparison: Its result, or the last good one while it is not there.
+        is_current: Whether the result is that of the state.
+        working: What is being done, in words, while it is not ready.
+        problem: Why there is no result of this state, in words.
+    """
+
+    comparison: Comparison
+    is_current: bool
+    working: str = ""
+    problem: str = ""
+
+
+class Desk:
+    """Makes results in one thread of its own; any thread may ask."""
+
+    def __init__(self, source: Source) -> None:
+        self.source = source
+        self._door = threading.Condition()
+        self._results: OrderedDict[Physics, Comparison | str] = OrderedDict()
+        self._wanted: Physics | None = None
+        self._doing = ""
+        self._since = 0.0
+        self._last: Comparison = assess(compare(source.case), source.on)
+        self._keep(State().physics, self._last)
+        threading.Thread(target=self._work, name="results", daemon=True).start()
+
+    @property
+    def is_idle(self) -> bool:
+        """Return whether nothing is being made: pictures then have the machine for themselves."""
+        return self._wanted is None
+
+    def outcome(self, state: State, patience_s: float = PATIENCE_S) -> Outcome:
+        """Return the result of a state, waiting a little for it.
+
+        Args:
+            state: The state.
+            patience_s: How long to wait before the last good result is returned as it is. [s]
+        """
+        key, until = state.physics, time.monotonic() + patience_s
+        with self._door:
+            if key not in self._results:
+                self._wanted = key
+                self._door.notify_all()
+            # Another state may be wanted meanwhile: who waits for this one then gets what there is.
+            while key not in self._results and (left := until - time.monotonic()) > 0.0 and self._wanted == key:
+                self._door.wait(left)
+            return self._outcome(key)
+
+    def _outcome(self, key: Physics) -> Outcome:
+        found = self._results.get(key)
+        if found is None:
+            took = time.monotonic() - self._since
+            return Outcome(self._last, False, f"{self._doing or 'Working out the numbers'}, {took:.0f} s so far")
+        self._results.move_to_end(key)
+        if isinstance(found, str):
+            return Outcome(self._last, False, problem=found)
+        self._last = found
+        return Outcome(found, True)
+
+    def _work(self) -> None:
+        while True:
+            with self._door:
+                while self._wanted is None:
+                    self._door.wait()
+                key, self._since, self._doing = self._wanted, time.monotonic(), ""
+            found = self._made(key)
+            with self._door:
+                self._keep(key, found)
+                if self._wanted == key:
+                    self._wanted = None
+                self._door.notify_all()
+
+    def _made(self, key: Physics) -> Comparison | str:
+        """Return the result, or why there is none: a fault of ours must not end the thread."""
+        try:
+            return assess(compare(self.source.case_with(key), self._say_build), self.source.on)
+        except RetrofitError as error:
+            return error.message if hasattr(error, "message") else str(error)
+        except Exception as error:
+            return f"this could not be computed, by a fault of the program ({type(error).__name__}); undo the change"
+
+    def _say_build(self, designation: str) -> None:
+        self._doing = f"Building the property tables of {designation}, once for this version"
+
+    def _keep(self, key: Physics, found: Comparison | str) -> None:
+        self._results[key] = found
+        while len(self._results) > MOST_RESULTS:
+            self._results.popitem(last=False)

@@ -1,0 +1,130 @@
+"""Weights of the meeting and the order they give, by `retrofit.study.ranking`; gates stand beside it by name."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+
+from retrofit.meeting.state import State
+from retrofit.report.judging import spelled
+from retrofit.study import Comparison
+from retrofit.study.accounts import accounts
+from retrofit.study.bands import band_of
+from retrofit.study.criteria import CRITERIA, criteria
+from retrofit.study.ranking import (
+    EQUAL_WEIGHT,
+    LARGEST_WEIGHT,
+    MEANING,
+    SCALE,
+    Order,
+    Scores,
+    flip,
+    order,
+    rank_stability,
+    score,
+    stability_words,
+)
+
+HEAVIEST = int(LARGEST_WEIGHT)
+USUAL = int(EQUAL_WEIGHT)
+
+
+@dataclass(frozen=True)
+class Weight:
+    """One criterion: its name, its weight, by what it is measured, and whether any option is known by it."""
+
+    name: str
+    weight: int
+    measure: str
+    counts: bool
+
+
+@dataclass(frozen=True)
+class Ranked:
+    """One option in the order, as texts: its place, its sum, and its score by each criterion that counts."""
+
+    place: str
+    name: str
+    total: str
+    share: int
+    scores: tuple[tuple[str, bool], ...]
+
+
+@dataclass(frozen=True)
+class Weighing:
+    """Weights, and the order that follows from them.
+
+    Attributes:
+        weights: Every criterion.
+        columns: The criteria that count.
+        ranked: Options in order.
+        gated: Options that are not ranked, with the gate or the reason.
+        remarks: Ties, rank stability, what would turn the order, and what counts as the worst for lack of data.
+        scale: How scores are made.
+    """
+
+    weights: tuple[Weight, ...]
+    columns: tuple[str, ...]
+    ranked: tuple[Ranked, ...]
+    gated: tuple[tuple[str, str], ...]
+    remarks: tuple[str, ...]
+    scale: str
+
+
+def weighing(view: Comparison, state: State) -> Weighing:
+    """Return the weights of the meeting and the order of what is in sight.
+
+    Args:
+        view: What is in sight.
+        state: The state.
+    """
+    weights = {name: float(dict(state.weights).get(name, USUAL)) for name in CRITERIA}
+    measured = criteria(view, accounts(view, {}), {}, index=1)
+    bands = {entry.refrigerant.designation: band_of(entry, "cop") for entry in view.entries}
+    scores = score(view, measured, bands)
+    found = order(scores, weights)
+    names = {entry.refrigerant.designation: entry.refrigerant.display_name for entry in view.entries}
+    return Weighing(
+        weights=tuple(
+            Weight(item.name, int(weights[item.name]), item.measure, item.name in scores.criteria) for item in measured
+        ),
+        columns=scores.criteria,
+        ranked=_ranked(scores, found, names),
+        gated=tuple((names[name], spelled(why)) for name, why in scores.not_ranked.items()),
+        remarks=tuple(spelled(text) for text in _remarks(scores, found, weights)),
+        scale=SCALE,
+    )
+
+
+def _ranked(scores: Scores, found: Order, names: Mapping[str, str]) -> tuple[Ranked, ...]:
+    def row(place: int, name: str, total: float) -> Ranked:
+        at = scores.names.index(name)
+        cells = zip(scores.scores[at].tolist(), scores.is_unknown[at].tolist(), strict=True)
+        texts = tuple((f"{value:.2f}", is_unknown) for value, is_unknown in cells)
+        shared = "=" if found.places.count(place) > 1 else ""
+        return Ranked(f"{place}{shared}", names[name], f"{total:.2f}", round(100 * total), texts)
+
+    return tuple(row(*item) for item in zip(found.places, found.names, found.totals, strict=True))
+
+
+def _remarks(scores: Scores, found: Order, weights: Mapping[str, float]) -> list[str]:
+    if not scores.names:
+        return []
+    used = [weights[name] for name in scores.criteria]
+    remarks = [
+        stability_words(scores, rank_stability(scores.scores, around, doubts=scores.doubts)) for around in (used, None)
+    ]
+    turned = flip(scores, {name: weights[name] for name in scores.criteria})
+    if turned:
+        remarks.append(turned.words)
+    if found.ties:
+        pairs = "; ".join(f"{first} and {second}" for first, second in found.ties[:6])
+        more = f"; and {len(found.ties) - 6} more pairs" if len(found.ties) > 6 else ""
+        remarks.append(f"Between these there is {MEANING}: {pairs}{more}.")
+    unknown = scores.unknown
+    if unknown:
+        parts = (f"{name}: {', '.join(missing)}" for name, missing in unknown.items())
+        remarks.append(f"Counted as the worst, because not known: {'; '.join(parts)}.")
+    if scores.left_out:
+        remarks.append(f"Not weighed, because no option is known by it: {', '.join(scores.left_out)}.")
+    return remarks

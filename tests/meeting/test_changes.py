@@ -1,0 +1,256 @@
+"""Forms without a script: each changes the newest state, and what is wrong is shown where it was written."""
+
+import re
+
+import pytest
+
+
+def field(html, key):
+    """Return the value that stands in an input."""
+    return re.search(rf'id="in-{re.escape(key)}"[^>]* value="([^"]*)"', html)[1]
+
+
+def numbers(client, quantity):
+    """Return a row of the comparison as the page shows it, today's first."""
+    return re.findall(
+        rf'<td class="n (?:today)?"><a class="how" href="/how/[^/]+/{quantity}">([^<]*)</a>', client.page()
+    )
+
+
+def test_a_change_is_followed_by_the_numbers_and_undone_by_undo(client):
+    """A warmer condenser costs COP; undo brings every number back, redo takes it away again."""
+    row = "efficiency-cop-cooling-over-compressor-power"
+    before = numbers(client, row)
+    page = client.change(**{"in.duty.condensing": "50 degC"})
+    after = numbers(client, row)
+    client.change("undo")
+    undone = numbers(client, row)
+    client.change("redo")
+
+    assert field(page, "duty.condensing") == "50 degC"
+    assert "<s>42 degC</s>" in page
+    assert all(float(new) < float(old) for new, old in zip(after, before, strict=True))
+    assert len(before) == 3
+    assert undone == before
+    assert numbers(client, row) == after
+
+
+def test_the_page_and_the_case_file_with_that_value_agree(client, case_file):
+    """A change on the page gives the numbers of a case file that says the same."""
+    from retrofit.case import read_case
+    from retrofit.checks import assess
+    from retrofit.study import compare
+
+    client.change(**{"in.duty.condensing": "46 degC", "in.duty.subcooling": "5 K", "in.plant.charge": "200 kg"})
+    text = case_file.read_text(encoding="utf-8")
+    for old, new in (("42 degC", "46 degC"), ('"3 K"', '"5 K"'), ("260 kg", "200 kg")):
+        text = text.replace(old, new, 1)
+    case_file.with_name("other.toml").write_text(text, encoding="utf-8")
+    expected = assess(compare(read_case(case_file.with_name("other.toml"))))
+
+    found = client.session.moment().outcome.comparison
+    assert [entry.duty for entry in found.entries] == [entry.duty for entry in expected.entries]
+    assert [entry.plant for entry in found.entries] == [entry.plant for entry in expected.entries]
+    assert [entry.findings for entry in found.entries] == [entry.findings for entry in expected.entries]
+
+
+@pytest.mark.parametrize(
+    ("key", "text", "words"),
+    [
+        ("duty.condensing", "50", "write"),
+        ("duty.condensing", "900 degC", "outside what is allowed"),
+        ("duty.cooling", "", "is missing"),
+        ("duty.useful_superheat", "5 degC", "K"),
+        ("compressor.isentropic_efficiency", "1.4", "outside what is allowed"),
+        ("plant.charge", "<b>heavy</b>", "does not begin with a number"),
+    ],
+)
+def test_a_wrong_value_stays_in_its_field_with_what_is_allowed(client, read, key, text, words):
+    """The state is as before, the text stands where it was written, and the complaint beside it."""
+    before = client.state
+    html = client.change(**{f"in.{key}": text})
+    wrong = re.search(r'<div class="in [^"]*wrong">.*?</div>', html, re.DOTALL)[0]
+
+    assert client.state == before
+    assert f'name="in.{key}"' in wrong
+    assert "Not taken:" in wrong
+    assert words in read(wrong)[1]
+    assert 'aria-invalid="true"' in wrong
+    assert ("b", {}) not in read(html)[0]
+
+
+def test_a_wrong_value_does_not_stop_the_next_change(client):
+    """A field left wrong keeps its text and complaint; a right change in another field is taken."""
+    client.change(**{"in.duty.condensing": "50"})
+    html = client.change(**{"in.duty.condensing": "50", "in.duty.subcooling": "6 K"})
+
+    assert dict(client.state.changes) == {"duty.subcooling": "6 K"}
+    assert field(html, "duty.condensing") == "50"
+    assert "Not taken:" in html
+
+
+def test_two_fields_that_fit_only_together_are_taken_together(client):
+    """An evaporator warmer than its air is refused; with warmer air it is taken, without writing it again."""
+    client.change(**{"in.duty.evaporating": "4 degC"})
+    refused = client.state.changes
+    client.change(
+        **{"in.duty.evaporating": "4 degC", "in.evaporator.inlet": "14 degC", "in.evaporator.outlet": "9 degC"}
+    )
+
+    assert refused == ()
+    assert dict(client.state.changes)["duty.evaporating"] == "4 degC"
+
+
+def test_a_late_form_changes_only_what_was_changed_on_it(client):
+    """Two windows: the second one's form, made before the first one's change, does not take that back."""
+    seen = client.session.version
+    client.change(**{"in.duty.condensing": "45 degC", "in.duty.subcooling": "3 K"})
+    client.post(seen=seen, **{"in.duty.condensing": "42 degC", "in.duty.subcooling": "6 K"})
+
+    assert dict(client.state.changes) == {"duty.condensing": "45 degC", "duty.subcooling": "6 K"}
+
+
+def test_a_form_from_nowhere_is_refused_in_words(client):
+    """A version that never was changes nothing, and the page says so."""
+    client.post(seen=999, **{"in.duty.condensing": "45 degC"})
+
+    assert client.state.changes == ()
+    assert "too old" in client.page()
+
+
+def test_steps_and_a_whole_side_move(client):
+    """A step changes one input; a side's step moves its three temperatures together."""
+    client.change("nudge duty.subcooling +1")
+    client.change("nudge sink +1")
+
+    assert dict(client.state.changes) == {
+        "duty.subcooling": "4 K",
+        "condenser.inlet": "33 degC",
+        "condenser.outlet": "39 degC",
+        "duty.condensing": "43 degC",
+    }
+    client.change("reset duty.subcooling")
+    client.change("reset")
+    assert client.state.changes == ()
+
+
+def test_hide_show_and_pin(client, read):
+    """A hidden candidate is named with its verdict and what decides it; a pinned one stands first; today's stays."""
+    page = client.change("hide R448A")
+    columns = re.findall(r'<th scope="row">.*? (R-[0-9A-Z]+)<span class="unit">', page)
+    hidden = re.search(r'<ul class="hidden-list">.*?</ul>', page, re.DOTALL)[0]
+    client.change("show R448A")
+    pinned = re.findall(r'<th scope="row">.*? (R-[0-9A-Z]+)<span class="unit">', client.change("pin R454C"))
+
+    assert columns == ["R-404A", "R-454C"]
+    assert "R-448A" in read(hidden)[1]
+    assert "suits with work" in hidden
+    assert pinned == ["R-404A", "R-454C", "R-448A"]
+
+
+def test_cautions_of_all_in_sight_are_on_the_page(client, read):
+    """Every caution text of every refrigerant shown stands there; with a candidate hidden only its own go."""
+
+    def texts(names):
+        found = client.session.moment().outcome.comparison.entries
+        return {c.text for e in found if e.refrigerant.designation in names for c in e.cautions}
+
+    whole = read(client.page())[1]
+    less = read(client.change("hide R454C"))[1]
+
+    assert all(re.sub(r"\s+", " ", text) in whole for text in texts({"R404A", "R448A", "R454C"}))
+    assert all(re.sub(r"\s+", " ", text) in less for text in texts({"R404A", "R448A"}))
+    assert len(texts({"R404A", "R448A", "R454C"})) > len(texts({"R404A", "R448A"})) > 1
+
+
+def test_add_and_take_away(client):
+    """A candidate is added by any spelling of its designation, and taken away again; nonsense is refused."""
+    client.change("add", designation="r-449a")
+    added = client.state.added
+    names = [entry.refrigerant.designation for entry in client.session.moment().outcome.comparison.candidates]
+    twice = client.change("add", designation="R449A")
+    wrong = client.change("add", designation="R999Z<script>")
+    client.change("drop R449A")
+
+    assert added == ("R449A",)
+    assert names == ["R448A", "R454C", "R449A"]
+    assert "is there already" in twice
+    assert "is not in the catalogue" in wrong
+    assert "<script>" not in wrong.replace('<script src="/meeting.js"', "")
+    assert client.state.added == ()
+
+
+def test_side_by_side_marks_differences(client):
+    """Two candidates stand beside today's, each line marked as the same, close or different."""
+    page = client.change("beside", first="R448A", second="R454C")
+    table = re.search(r'<table[^>]*id="t-beside".*?</table>', page, re.DOTALL)[0]
+
+    assert re.findall(r'<th scope="col"[^>]*>([^<]*)', table) == [
+        "Quantity",
+        "R-404A",
+        "R-448A",
+        "R-454C",
+        "Difference",
+    ]
+    marks = re.findall(r'<tr class="(same|close|differs)">', table)
+    assert marks.count("differs") > 20
+    assert {"same", "close"} <= set(marks)
+    # By hand from the table of the case: 39.3 and 45.2 against 38.. : the difference is second less first.
+    first, second, difference = (
+        float(text.replace("\N{MINUS SIGN}", "-").replace("\N{NARROW NO-BREAK SPACE}", ""))
+        for text in re.search(
+            r"Condenser bubble point.*?</td><td class=\"n \">.*?>([^<]*)</a></td><td class=\"n \">.*?>([^<]*)</a></td>"
+            r"<td class=\"n\">([^<]*)</td>",
+            table,
+        ).groups()
+    )
+    assert difference == pytest.approx(second - first, abs=0.11)
+
+
+def test_weights_change_the_order_and_gates_stay_gates(client, read):
+    """A candidate stopped by a gate is not ranked whatever the weights, and named with it."""
+    client.change("add", designation="R449A")
+    ways = []
+    for name in ("energy", "climate"):
+        weights = {f"w.{other}": "10" if other == name else "0" for other in WEIGHED}
+        page = client.change("weigh", **weights)
+        ways.append(re.findall(r'<tr><td class="n">[0-9=]+</td><th scope="row">([^<]*)</th>', page))
+        gated = read(re.search(r'<ul class="gated">.*?</ul>', page, re.DOTALL)[0])[1]
+        assert "R-454C is not ranked:" in gated
+        assert "weight sets drawn" in page
+
+    assert ways[0] != ways[1]
+    assert all("R-454C" not in way for way in ways)
+    refused = client.change("weigh", **{"w.energy": "11"})
+    assert "whole number from 0 to 10" in refused
+
+
+WEIGHED = ("energy", "first cost", "climate", "safety works", "supply risk", "disruption")
+
+
+def test_notes_survive_a_reload(client):
+    """Notes are kept with the meeting; they are text and nothing else."""
+    client.change("note", **{"n.meeting": "Ask the maker.\nTwice.", "n.R448A": "<script>alert(1)</script>"})
+    page = client.page()
+
+    assert dict(client.state.notes)["meeting"] == "Ask the maker.\nTwice."
+    assert "Ask the maker." in page
+    assert "&lt;script&gt;alert(1)&lt;/script&gt;" in page
+    assert "<script>alert" not in page
+
+
+def test_units_change_every_number_and_nothing_else(client):
+    """Inch-pound units show the same result; no result is made anew."""
+    before = client.session.moment().outcome.comparison
+    page = client.change("units ip")
+
+    assert "°F" in page
+    assert "psig" in page
+    assert client.session.moment().outcome.comparison is before
+
+
+def test_an_unknown_act_is_told_in_words(client):
+    """What no button asks for is refused without a fault."""
+    for act in ("", "explode", "hide", "hide R11", "pin ../../etc/passwd", "nudge duty.cooling +9", "units furlongs"):
+        assert client.post(act).status_code == 303
+    assert client.state.hidden == ()

@@ -1,0 +1,133 @@
+"""Freezing: a whole case file and its report beside the original, and nothing else anywhere."""
+
+import re
+import tomllib
+
+import pytest
+
+from retrofit.case import as_key, as_toml, laid_over, read_case
+from retrofit.checks import assess
+from retrofit.meeting.freeze import whole_toml
+from retrofit.study import compare
+from tests.meeting.conftest import ROOT
+
+SHIPPED = sorted(path.stem for path in (ROOT / "cases").glob("*.toml"))
+
+
+def test_a_frozen_case_is_the_meeting_s_case(client, case_file, read):
+    """Read back, the revision has what was changed and added, and gives the numbers of the page."""
+    before = case_file.read_bytes()
+    client.change(**{"in.duty.condensing": "46 degC", "in.plant.oil": "x", "in.duty.line_superheat": ""})
+    client.change("add", designation="R449A")
+    client.change("note", **{"n.meeting": "Ask the maker\nof the compressors."})
+    client.change("weigh", **{"w.energy": "9"})
+    shown = client.session.moment().outcome.comparison
+    page = client.change(path="/freeze", what="Hotter <b>roof</b>")
+    revision = case_file.with_name("market-rev-a.toml")
+    text, frozen = revision.read_text(encoding="utf-8"), assess(compare(read_case(revision)))
+
+    assert [entry.duty for entry in frozen.entries] == [entry.duty for entry in shown.entries]
+    assert [entry.verdict for entry in frozen.entries] == [entry.verdict for entry in shown.entries]
+    assert frozen.case.given["duty.condensing"] == "46 degC"
+    assert "duty.line_superheat" not in frozen.case.given
+    assert frozen.case.report.revisions[-1].rev == "A"
+    assert frozen.case.report.revisions[-1].what == "Hotter <b>roof</b>"
+    assert "# a gauge" not in text
+    assert "# nameplate" in text  # the original's own remarks are kept
+    assert "Ask the maker" in text
+    assert "Weight of energy: 9." in text
+    assert "was 42 degC" in text
+    assert "market-rev-a.html" in page
+    assert "<b>roof" not in page
+    assert case_file.read_bytes() == before
+
+
+def test_the_report_of_a_revision_is_written_beside_it(client, case_file):
+    """The report is the one of the frozen case, with its revision in it."""
+    client.change(path="/freeze", what="First talk")
+    report = case_file.with_name("market-rev-a.html").read_text(encoding="utf-8")
+
+    assert "First talk" in report
+    assert "Harbour market, medium-temperature rack" in report
+    assert sorted(path.name for path in case_file.parent.iterdir()) == [
+        "market-rev-a.html", "market-rev-a.toml", "market.toml",
+    ]  # fmt: skip
+
+
+def test_nothing_is_overwritten(client, case_file):
+    """A name that is taken, as case or as report, is passed over."""
+    case_file.with_name("market-rev-a.toml").write_text("mine", encoding="utf-8")
+    case_file.with_name("market-rev-b.html").write_text("mine", encoding="utf-8")
+    client.change(path="/freeze", what="")
+    client.change(path="/freeze", what="")
+
+    assert case_file.with_name("market-rev-a.toml").read_text(encoding="utf-8") == "mine"
+    assert case_file.with_name("market-rev-b.html").read_text(encoding="utf-8") == "mine"
+    assert not case_file.with_name("market-rev-b.toml").exists()
+    assert case_file.with_name("market-rev-c.toml").exists()
+    assert case_file.with_name("market-rev-d.html").exists()
+
+
+def test_what_cannot_be_written_is_said_on_the_page(client, case_file, monkeypatch):
+    """A report that fails leaves no half of a revision, and the page says why."""
+    from retrofit.errors import ReportError
+
+    def fail(*parts, **named):
+        raise ReportError("the disk is full")
+
+    monkeypatch.setattr("retrofit.meeting.freeze.write_report", fail)
+    page = client.change(path="/freeze", what="never")
+
+    assert "Not frozen: the disk is full" in page
+    assert [path.name for path in case_file.parent.iterdir()] == ["market.toml"]
+
+
+@pytest.mark.parametrize("name", SHIPPED)
+def test_a_case_written_anew_is_the_same_case(name):
+    """Every shipped case, written out by our own writer, reads back equal (by Python's own parser)."""
+    data = tomllib.loads((ROOT / "cases" / f"{name}.toml").read_text(encoding="utf-8"))
+
+    assert tomllib.loads(whole_toml(data)) == data
+
+
+@pytest.mark.parametrize(
+    "text", ['a"b', "back\\slash", "tab\t", "\u00e9 \u2212 \U0001f9ca", "\x7f", "'''", "new\nline", ""]
+)
+def test_any_text_can_be_written(text):
+    """Texts and keys with any character read back as they were."""
+    assert tomllib.loads(f"{as_key(text)} = {as_toml([text, {text: text}])}") == {text: [text, {text: text}]}
+
+
+def test_changes_leave_the_data_alone():
+    """Laying changes over a case makes new data; the old stays as it was."""
+    data = {"duty": {"cooling": "1 kW", "subcooling": "3 K"}, "compare": {"candidates": ["R290"]}}
+    laid = laid_over(data, {"duty.cooling": "2 kW", "duty.subcooling": "", "plant.x": "0.5"}, ("R600a",))
+
+    assert laid == {
+        "duty": {"cooling": "2 kW"}, "compare": {"candidates": ["R290", "R600a"]}, "plant": {"x": 0.5},
+    }  # fmt: skip
+    assert data == {"duty": {"cooling": "1 kW", "subcooling": "3 K"}, "compare": {"candidates": ["R290"]}}
+
+
+def test_the_name_comes_from_the_server(client, case_file):
+    """Whatever a form says about names, the file is named after the case."""
+    client.post(path="/freeze", what="../../elsewhere", name="../evil.toml", case_file="/tmp/evil.toml")
+
+    assert [path.name for path in sorted(case_file.parent.iterdir())] == [
+        "market-rev-a.html", "market-rev-a.toml", "market.toml",
+    ]  # fmt: skip
+    assert re.search(r"elsewhere", case_file.with_name("market-rev-a.toml").read_text(encoding="utf-8"))
+
+
+def test_a_revision_of_the_case_is_counted_on(case_file):
+    """A case that has revisions A and B gets C, in its table and in the names of the files."""
+    from retrofit.meeting import session_of
+    from tests.meeting.conftest import Client
+
+    text = case_file.read_text(encoding="utf-8")
+    rows = 'revisions = [["A", "2026-11-20", "first", "x"], ["B", "2026-11-21", "second", "x"]]'
+    case_file.write_text(text.replace("revisions = []", rows), encoding="utf-8")
+    Client(session_of(case_file)).change(path="/freeze", what="third")
+
+    frozen = read_case(case_file.with_name("market-rev-c.toml"))
+    assert [row.rev for row in frozen.report.revisions] == ["A", "B", "C"]
