@@ -53,6 +53,29 @@ def test_it_is_tagged_and_says_language_and_title(reader, small):
     assert reader.metadata.title == f"{small.case.title}: refrigerant changeover"
 
 
+def test_figures_have_words_and_tables_have_heads(reader):
+    """What the tags are for: every figure says what it shows, tables have heading cells, one heading is the first."""
+    found, left = [], [reader.trailer["/Root"]["/StructTreeRoot"]["/K"]]
+    while left:
+        node = left.pop().get_object() if hasattr(left[-1], "get_object") else left.pop()
+        if isinstance(node, list):
+            left += node
+        elif isinstance(node, dict):
+            found.append(node)
+            left += [node["/K"]] if "/K" in node else []
+    kinds = [node.get("/S") for node in found]
+
+    assert kinds.count("/H1") == 1
+    assert kinds.count("/TH") > kinds.count("/Table") > 10
+    assert all(node["/Alt"] for node in found if node.get("/S") == "/Figure")
+    assert "/Figure" in kinds
+
+
+def test_no_page_is_left_with_a_heading_alone(texts):
+    """A table longer than a page begins under its heading; running heads and numbers are about 100 characters."""
+    assert min(len(text) for text in texts[:-1]) > 300
+
+
 def test_every_font_is_in_the_file(reader):
     """No page relies on a font of the reader's machine, and each can be turned back into text."""
     fonts = [font.get_object() for page in reader.pages for font in page["/Resources"]["/Font"].values()]
