@@ -18,6 +18,8 @@ ADVICE = (
     "libpango-1.0-0, libpangoft2-1.0-0 and libharfbuzz-subset0), or open the HTML report in a browser and print to PDF"
 )
 CASE_KEPT = "The case file of this report"
+# The setter leaves a heading alone on its page before a table that is kept whole but longer than a page.
+BREAKS = "table.words { break-inside: auto !important }"
 
 
 def require_pdf() -> None:
@@ -44,7 +46,8 @@ def render_pdf(html: str, comparison: Comparison) -> bytes:
     fetcher = setter.urls.URLFetcher(allowed_protocols={"data"})
     attached = [setter.Attachment(string=case.text, name=name, description=CASE_KEPT)] if case.text else []
     page = setter.HTML(string=html, url_fetcher=fetcher)
-    return bytes(page.write_pdf(pdf_tags=True, attachments=attached))
+    breaks = setter.CSS(string=BREAKS, url_fetcher=fetcher)
+    return bytes(page.write_pdf(stylesheets=[breaks], pdf_tags=True, attachments=attached))
 
 
 def _setter() -> Any:
