@@ -7,7 +7,7 @@ from dataclasses import fields, replace
 import numpy as np
 
 from retrofit.cycle import Cycle, cycle_temperatures
-from retrofit.study.result import FloatArray, Performance
+from retrofit.study.result import FloatArray, Number, Performance
 
 FLOWS = (
     "cooling_W",
@@ -71,7 +71,7 @@ def as_numbers(found: Performance[FloatArray], place: int | tuple[()] = ()) -> P
     return Performance(**numbers)
 
 
-def at_swept_volume(found: Performance[float], swept_volume_m3_per_s: float) -> Performance[float]:
+def at_swept_volume(found: Performance[Number], swept_volume_m3_per_s: Number) -> Performance[Number]:
     """Return a performance with everything that scales with flow brought to another swept volume.
 
     Args:

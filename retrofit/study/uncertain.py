@@ -1,39 +1,36 @@
-"""Inputs that may be off, and draws of them: what the case says with plus or minus, and what is usual where it does not.
+"""Inputs that may be off, and draws of them: within the plus or minus of the case, or a usual one where it has none.
 
-An input lies somewhere within its limits, nowhere more likely than elsewhere: a rectangular distribution, as the
-Guide to the expression of uncertainty in measurement (JCGM 100:2008, 4.3.7) takes where only limits are known. A sum
-of money with low, base and high is triangular about its base.
+An input with plus or minus lies somewhere within its limits, nowhere more likely than elsewhere: a rectangular
+distribution, as the Guide to the expression of uncertainty in measurement (JCGM 100:2008, 4.3.7) takes where only the
+limits are known. One with low, base and high is triangular about its base.
 """
 
 from __future__ import annotations
 
 import tomllib
 import zlib
-from collections.abc import Iterator, Mapping
+from collections.abc import Iterable, Iterator, Mapping
 from dataclasses import dataclass
 from functools import cache
 from importlib.resources import files
 
 import numpy as np
-from numpy.typing import NDArray
 
-from retrofit.case import Case, Range, meaning
+from retrofit.case import Case, meaning
 from retrofit.case.model import FIELDS
-from retrofit.study.result import FloatArray
+from retrofit.study.spread import FloatArray, Spread, single, triangular
 
-CLIMATE = "year.climate"  # the weather of the year as a whole, warmer or colder
-LEAK_RATE = "leak_rate"  # whatever it was taken from
-# Keys of the case whose numbers the study takes as arrays.
-DRAWN = (
-    "duty.cooling", "duty.evaporating", "duty.condensing", "duty.useful_superheat", "duty.line_superheat",
-    "duty.subcooling", "compressor.isentropic_efficiency", "compressor.volumetric_efficiency",
-    "compressor.swept_volume", "compressor.motor_efficiency", "evaporator.inlet", "evaporator.outlet",
-    "evaporator.flow", "condenser.inlet", "condenser.outlet", "condenser.flow", "year.peak_load", "year.base_load",
-    "year.condenser_fans", "year.evaporator_fans", "year.pumps", "year.defrost_power", "plant.charge",
-    "emissions.recovery_at_end", "emissions.lost_at_change", "emissions.grid_factor", "money.tariff",
-    "money.demand_charge", "money.leak_check", "money.levy",
-)  # fmt: skip
+WEATHER = "year.weather"  # the weather of the year as a whole: a shift
 EFFICIENCIES = ("compressor.isentropic_efficiency", "compressor.volumetric_efficiency")
+# Keys of the case whose numbers the plant is solved with as arrays.
+PHYSICAL = (
+    "duty.cooling", "duty.evaporating", "duty.condensing", "duty.useful_superheat", "duty.line_superheat",
+    "duty.subcooling", *EFFICIENCIES, "compressor.swept_volume", "compressor.motor_efficiency", "compressor.heat_loss",
+    "evaporator.inlet", "evaporator.outlet", "evaporator.flow", "condenser.inlet", "condenser.outlet", "condenser.flow",
+    "year.peak_load", "year.base_load", "year.condenser_fans", "year.evaporator_fans", "year.pumps",
+    "year.defrost_power",
+)  # fmt: skip
+LEAK_RATES = ("emissions.leak_rate", "emissions.leak_rate_after", "law.annual_leak_rate", "law.equipment")
 NOT_BELOW_ZERO = ("temperature difference", "fraction")
 
 
@@ -45,58 +42,51 @@ class Uncertain:
         key: Its key in the case, or a name of ours.
         name: What it is, for a reader.
         kind: Its kind of quantity, as unit systems name it; empty for money.
-        base, low, high: The value of the case, and its limits. [SI]
-        origin: "case" or "assumed".
+        spread: Its limits, and the value of the case. [SI]
+        origin: "case", "assumed" or "model".
         why: Where the limits come from.
-        shape: "rectangular" or "triangular".
+        is_triangular: Whether it is the likelier the nearer to the value of the case.
     """
 
     key: str
     name: str
     kind: str
-    base: float
-    low: float
-    high: float
+    spread: Spread
     origin: str
     why: str
-    shape: str = "rectangular"
+    is_triangular: bool = False
 
     def at(self, share: FloatArray) -> FloatArray:
         """Return the value below which a share of the distribution lies.
 
         Args:
             share: Shares from 0 to 1, of any shape. [-]
-        Source: inverse of the distribution function; of the triangular one see any handbook of statistics.
+        Source: inverse of the distribution function.
         """
-        if self.shape == "rectangular":
-            return self.low + share * (self.high - self.low)
-        width = max(self.high - self.low, np.finfo(float).tiny)
-        turn = (self.base - self.low) / width
-        rising = self.low + np.sqrt(share * width * (self.base - self.low))
-        falling = self.high - np.sqrt((1.0 - share) * width * (self.high - self.base))
-        return np.where(share < turn, rising, falling)
+        low, _, high = self.spread
+        return triangular(self.spread, share) if self.is_triangular else low + share * (high - low)
 
 
 @dataclass(frozen=True)
 class Sample:
-    """Values of the inputs, row by row: the base, the draws, and each input at its limits with the others at base.
+    """Values of inputs, row by row: the base, the draws, then each input at its limits with the others at their base.
 
     Attributes:
         inputs: The inputs.
-        values: Shape (inputs, rows).
+        values: By key, each of shape (rows,).
         draws: Number of draws.
         seed: What the draws follow from.
     """
 
     inputs: tuple[Uncertain, ...]
-    values: FloatArray
+    values: Mapping[str, FloatArray]
     draws: int
     seed: int
 
     @property
     def rows(self) -> int:
         """Return the number of rows. [-]"""
-        return int(self.values.shape[1])
+        return 1 + self.draws + 2 * len(self.inputs)
 
     @property
     def drawn(self) -> slice:
@@ -112,58 +102,53 @@ class Sample:
         start = 1 + self.draws + 2 * place
         return start, start + 1
 
-    def of(self, key: str) -> FloatArray | None:
-        """Return the values of an input, shape (rows,), or None if it is not uncertain.
+    def pick(self, key: str, spread: Spread) -> FloatArray:
+        """Return the values of an input, its base throughout if it is not uncertain.
 
         Args:
-            key: Its key.
+            key: Its key. [-]
+            spread: Its spread, for the base.
+        Returns: Values, shape (rows,).
         """
-        places = [place for place, item in enumerate(self.inputs) if item.key == key]
-        return self.values[places[0]] if places else None
+        found = self.values.get(key)
+        return np.full(self.rows, spread.base) if found is None else found
 
 
-def uncertain_inputs(case: Case) -> tuple[Uncertain, ...]:
-    """Return the inputs of a case that may be off, with the limits of the case or those that are usual.
+def physical_inputs(case: Case) -> Iterator[Uncertain]:
+    """Yield the inputs of plant and year that may be off.
 
     Args:
         case: The case.
     """
-    return tuple(item for key in (*DRAWN, CLIMATE, LEAK_RATE) for item in _input(case, key))
+    for key in PHYSICAL:
+        if key in EFFICIENCIES and has_curve(case):
+            yield from _within_limits(case, key, single(1.0))  # points and polynomials are off by a factor
+            continue
+        value = getattr(getattr(case, key.partition(".")[0]), FIELDS[key][0], None)
+        if value is not None:
+            yield from _within_limits(case, key, single(float(value)))
+    if case.weather is not None:
+        yield from _within_limits(case, WEATHER, single(0.0))
 
 
-@cache
-def _usual() -> Mapping[str, dict[str, object]]:
-    return tomllib.loads(files("retrofit.study").joinpath("inputs.toml").read_text(encoding="utf-8"))
+def counted_inputs(case: Case, counted: Mapping[str, Spread]) -> Iterator[Uncertain]:
+    """Yield the inputs of emissions and money that may be off.
 
-
-def _input(case: Case, key: str) -> Iterator[Uncertain]:
-    base = _value(case, key)
-    if isinstance(base, Range):
-        if base.low < base.high:
-            why = "low, base and high of the case"
-            yield Uncertain(key, meaning(key), "", base.base, base.low, base.high, "case", why, "triangular")
-        return
-    if base is None:
-        return
-    own, usual = case.widths.get(key), _usual().get(key)
-    if own is None and usual is None:
-        return
-    if own is not None:
-        half, origin, why = own, "case", "plus or minus of the case"
-    else:
-        assert usual is not None
-        half, origin, why = float(usual["plus_minus"]), "assumed", str(usual["why"])  # type: ignore[arg-type]
-        half *= base if usual["by"] == "share" else 1.0
-    kind, name = _named(case, key)
-    low, high = base - half, base + half
-    low = max(low, 0.0) if kind in NOT_BELOW_ZERO else low
-    high = min(high, 1.0) if kind == "fraction" else high
-    if low < high:
-        yield Uncertain(key, name, kind, base, low, high, origin, why)
+    Args:
+        case: The case.
+        counted: The spread of each input that counts, by its key.
+    """
+    for key, spread in counted.items():
+        if spread.low < spread.high:
+            why = "low, base and high of the case" if key in FIELDS or "." in key else "a range"
+            kind, name = named(case, key)
+            yield Uncertain(key, name, kind, spread, "case", why, is_triangular=True)
+        else:
+            yield from _within_limits(case, key, spread)
 
 
 def has_curve(case: Case) -> bool:
-    """Say whether the compressor of a case has efficiency points or a polynomial, which are off by a factor.
+    """Say whether the compressor of a case has efficiency points or a polynomial.
 
     Args:
         case: The case.
@@ -171,32 +156,62 @@ def has_curve(case: Case) -> bool:
     return case.compressor.efficiency_points is not None or case.compressor.polynomial is not None
 
 
-def _named(case: Case, key: str) -> tuple[str, str]:
-    if key in EFFICIENCIES:
-        return "ratio" if has_curve(case) else "fraction", meaning(key).rstrip(".")
-    if key == CLIMATE:
-        return "temperature shift", "Outdoor temperature of the year"
-    if key == LEAK_RATE:
-        return "ratio", "Leak rate, today and after"
+@cache
+def _usual() -> Mapping[str, dict[str, object]]:
+    return tomllib.loads(files("retrofit.study").joinpath("inputs.toml").read_text(encoding="utf-8"))
+
+
+def _within_limits(case: Case, key: str, spread: Spread) -> Iterator[Uncertain]:
+    """Yield an input with the plus or minus of the case, or the usual one; nothing if there is neither."""
+    base, own = spread.base, case.widths.get(key)
+    usual = _usual().get("leak_rate" if key in LEAK_RATES or key.endswith(".leak_rate") else key)
+    if own is not None:
+        half, origin, why = own, "case", "plus or minus of the case"
+    elif usual is not None:
+        half, origin, why = float(str(usual["plus_minus"])), "assumed", str(usual["why"])
+        half *= base if usual["by"] == "share" else 1.0
+    else:
+        return
+    kind, name = named(case, key)
+    low = max(base - half, 0.0) if kind in NOT_BELOW_ZERO else base - half
+    high = min(base + half, 1.0) if kind == "fraction" else base + half
+    if low < high:
+        yield Uncertain(key, name, kind, Spread(low, base, high), origin, why)
+
+
+def named(case: Case, key: str) -> tuple[str, str]:
+    """Return the kind of quantity of an input, and what it is for a reader.
+
+    Args:
+        case: The case.
+        key: Its key.
+    """
+    table, _, rest = key.partition(".")
+    if key == WEATHER:
+        return "temperature difference", "Outdoor temperature of the year, shifted"
+    if key == "law.equipment":
+        return "fraction", "Leak rate, by type of equipment"
+    if key == "emissions.leak_log":
+        return "fraction", "Leak rate, by the log of top-ups"
+    if key == "emissions.grid_years":
+        return "ratio", "Grid factor of every year, times"
+    if table == "options":
+        name, _, item = rest.partition(".")
+        kinds = {"charge": "mass", "leak_rate": "fraction", "contingency": "fraction"}
+        return kinds.get(item, ""), f"{item.replace('_', ' ').capitalize()} of {name}"
+    if key.startswith("money.refrigerant_price."):
+        return "", f"Price of {key.rpartition('.')[2]}"
+    if key not in FIELDS:
+        return "", key
     how = next((extra for extra in FIELDS[key][1].metadata if hasattr(extra, "shown_kind")), None)
-    return how.shown_kind() if how else "", meaning(key).rstrip(".")
+    kind = "ratio" if key in EFFICIENCIES and has_curve(case) else how.shown_kind() if how else ""
+    return "fraction" if key in EFFICIENCIES and kind != "ratio" else kind, meaning(key).rstrip(".")
 
 
-def _value(case: Case, key: str) -> float | Range | None:
-    """Return the value of an input; for those that stand for many numbers, the factor or shift that leaves them."""
-    if key == CLIMATE:
-        return None if case.weather is None else 0.0
-    if key == LEAK_RATE:
-        return None if case.emissions is None else 1.0
-    table, _, _ = key.partition(".")
-    value = getattr(getattr(case, table), FIELDS[key][0], None)
-    if key in EFFICIENCIES and has_curve(case):
-        return 1.0
-    return value if isinstance(value, int | float | Range) else None
+def sample(inputs: Iterable[Uncertain], draws: int, seed: int) -> Sample:
+    """Return draws of inputs, each input's distribution divided into as many equal shares as there are draws.
 
-
-def sample(inputs: tuple[Uncertain, ...], draws: int, seed: int) -> Sample:
-    """Return draws of inputs, each input's range divided into as many equal shares as there are draws.
+    An input's draws follow from the seed and its key alone: an option more or less leaves those of the others.
 
     Args:
         inputs: The inputs.
@@ -204,37 +219,27 @@ def sample(inputs: tuple[Uncertain, ...], draws: int, seed: int) -> Sample:
         seed: The same seed gives the same draws. [-]
     Source: Latin hypercube sampling, McKay, Beckman and Conover (1979).
     """
-    base = np.array([item.base for item in inputs])
-    values = np.repeat(base[:, None], 1 + draws + 2 * len(inputs), axis=1)
-    shares = latin_hypercube(len(inputs), draws, seed)
-    for place, item in enumerate(inputs):
-        values[place, 1 : 1 + draws] = item.at(shares[place])
+    known = tuple(inputs)
+    values = {}
+    for place, item in enumerate(known):
+        column = np.full(1 + draws + 2 * len(known), item.spread.base)
+        column[1 : 1 + draws] = item.at(stratified(draws, seed, item.key))
         start = 1 + draws + 2 * place
-        values[place, start], values[place, start + 1] = item.low, item.high
-    return Sample(inputs, values, draws, seed)
+        column[start], column[start + 1] = item.spread.low, item.spread.high
+        values[item.key] = column
+    return Sample(known, values, draws, seed)
 
 
-def latin_hypercube(count: int, draws: int, seed: int) -> FloatArray:
-    """Return shares between 0 and 1, each row with one value in each of as many equal parts as there are draws.
+def stratified(draws: int, seed: int, key: str) -> FloatArray:
+    """Return shares between 0 and 1, one in each of as many equal parts as there are draws, in random order.
 
     Args:
-        count: Number of inputs. [-]
         draws: Number of draws. [-]
-        seed: The same seed gives the same shares. [-]
-    Returns: Shares, shape (count, draws). [-]
+        seed: The same seed and key give the same shares. [-]
+        key: Key of the input. [-]
+    Returns: One column of a Latin hypercube, shape (draws,). [-]
     """
     from scipy.stats.qmc import LatinHypercube
 
-    if count == 0:
-        return np.empty((0, draws))
-    return np.asarray(LatinHypercube(d=count, rng=np.random.default_rng(seed)).random(draws).T)
-
-
-def own_seed(seed: int, name: str) -> int:
-    """Return a seed for what belongs to one refrigerant alone, so that others do not change its draws.
-
-    Args:
-        seed: The seed of the study. [-]
-        name: Its designation.
-    """
-    return seed * 1_000_003 + zlib.crc32(name.encode())
+    generator = np.random.default_rng([seed, zlib.crc32(key.encode())])
+    return np.asarray(LatinHypercube(d=1, rng=generator).random(draws)[:, 0])

@@ -40,6 +40,7 @@ class YearConditions:
         T_air_K: Outdoor air.
         T_cond_in_K, T_evap_in_K: At the inlets of condenser and evaporator.
         load_W: Load, with what defrosting adds.
+        day_factor: Share of the day's load that counts in the condition, for its hour of the day.
         month: Month, 1 to 12; None for bins.
         serves: "cooling" or "heating", what the load is.
     """
@@ -50,6 +51,7 @@ class YearConditions:
     T_cond_in_K: FloatArray
     T_evap_in_K: FloatArray
     load_W: FloatArray
+    day_factor: FloatArray
     month: IntArray | None
     serves: str
 
@@ -160,9 +162,6 @@ def year_conditions(case: Case) -> YearConditions | None:
 
     T_air = twice(weather.T_dry_bulb_K)
     factor = np.concatenate([np.broadcast_to(factor, weather.hours.shape) for factor in factors])
-    load = _load_W(case, year, T_air) * factor
-    if year.serves == "cooling":
-        load = load + (year.defrost_power_W or 0.0) * year.defrost_to_load
     cond_in = _inlet_K(weather, year.condenser_follows, year.condenser_approach_K, case.condenser.inlet_K)
     evap_in = _inlet_K(weather, year.evaporator_follows, year.evaporator_approach_K, case.evaporator.inlet_K)
     return YearConditions(
@@ -171,7 +170,8 @@ def year_conditions(case: Case) -> YearConditions | None:
         T_air_K=T_air,
         T_cond_in_K=twice(cond_in),
         T_evap_in_K=twice(evap_in),
-        load_W=load,
+        load_W=load_W(case, T_air, factor),
+        day_factor=factor,
         month=None if weather.month is None else np.tile(weather.month, len(factors)),
         serves=year.serves,
     )
@@ -190,13 +190,33 @@ def _day_and_night(year: Year, weather: Weather) -> tuple[tuple[float, ...], tup
     return (1.0,), (by_day + (1.0 - by_day) * year.night_load,)
 
 
-def _load_W(case: Case, year: Year, T_air_K: FloatArray) -> FloatArray:
-    peak = case.duty.cooling_W if year.peak_load_W is None else year.peak_load_W
-    base = peak if year.base_load_W is None else year.base_load_W
-    if year.peak_at_K is None or year.base_at_K is None:
-        return np.full(T_air_K.shape, float(peak))
-    share = np.clip((T_air_K - year.base_at_K) / (year.peak_at_K - year.base_at_K), 0.0, 1.0)
-    return np.asarray(base + share * (peak - base))
+def load_W(case: Case, T_air_K: FloatArray, day_factor: FloatArray) -> FloatArray:
+    """Return the load at outdoor temperatures, with what defrosting adds. [W]
+
+    Args:
+        case: The case with a year; its numbers may be arrays.
+        T_air_K: Outdoor temperature. [K]
+        day_factor: Share of the day's load that counts. [-]
+    Source: linear in the outdoor temperature between base and peak, constant beyond both.
+    """
+    year = case.year
+    assert year is not None
+    peak = np.asarray(case.duty.cooling_W if year.peak_load_W is None else year.peak_load_W)
+    base = peak if year.base_load_W is None else np.asarray(year.base_load_W)
+    share = np.ones(np.shape(T_air_K))
+    if year.peak_at_K is not None and year.base_at_K is not None:
+        share = np.clip((T_air_K - year.base_at_K) / (year.peak_at_K - year.base_at_K), 0.0, 1.0)
+    defrost = or_nothing(year.defrost_power_W) * year.defrost_to_load if year.serves == "cooling" else 0.0
+    return np.asarray((base + share * (peak - base)) * day_factor + defrost)
+
+
+def or_nothing(power_W: ArrayLike | None) -> FloatArray:
+    """Return a power, zero if it is not given. [W]
+
+    Args:
+        power_W: The power. [W]
+    """
+    return np.asarray(0.0 if power_W is None else power_W, dtype=float)
 
 
 def _inlet_K(weather: Weather, follows: str, approach_K: float, constant_K: float | None) -> FloatArray:
@@ -332,9 +352,9 @@ def _year_of(
     unmet = np.where(is_solved, run.unmet_W, asked.load_W)
     run_time = np.where(is_solved, run.run_time_fraction, 1.0)
     power = electric_W(case, np.where(is_solved, run.mean_power_W, 0.0))
-    fans = (case.year.condenser_fans_W or 0.0) * run_time
-    steady = (case.year.evaporator_fans_W or 0.0) + (case.year.pumps_W or 0.0)
-    defrost = case.year.defrost_power_W or 0.0
+    fans = float(or_nothing(case.year.condenser_fans_W)) * run_time
+    steady = float(or_nothing(case.year.evaporator_fans_W) + or_nothing(case.year.pumps_W))
+    defrost = float(or_nothing(case.year.defrost_power_W))
     total = power + fans + steady + defrost
     energy, compressor = (float(np.sum(value * hours)) * HOUR_S for value in (total, power))
     delivered = float(np.sum((asked.load_W - unmet) * hours)) * HOUR_S

@@ -1,0 +1,288 @@
+"""What a plant does for every draw of its inputs: at the design point, and over a year by its map, on arrays.
+
+Rows are those of the `Sample`: base, draws, and each input at its limits. Today's refrigerant is drawn with the same
+rows, so that what a candidate is better or worse by keeps what both have in common.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from retrofit.case import Case
+from retrofit.case.model import FIELDS
+from retrofit.equipment.balance import balance
+from retrofit.properties import Fluid
+from retrofit.study.operating import balanced, delivered_W, operating
+from retrofit.study.performance import at_swept_volume, performance
+from retrofit.study.result import FloatArray, Performance
+from retrofit.study.spread import single
+from retrofit.study.today import Today, today_of, with_numbers
+from retrofit.study.uncertain import EFFICIENCIES, PHYSICAL, WEATHER, Sample, has_curve
+from retrofit.study.year import HOUR_S, YearConditions, YearPlant, electric_W, load_W, or_nothing
+
+NODES, FEW_NODES = 12, 5  # of a row's map along its sinks, and along its sources where both vary
+CELL_K, CELL_SHARE = 1.0, 0.05  # conditions of a year this close are taken together
+
+
+@dataclass(frozen=True)
+class DesignRows:
+    """A refrigerant at the design point, row by row; arrays of shape (rows,), NaN where a row has no solution.
+
+    Attributes:
+        cooling_W, power_W, cop: At full, with the model's own error; the COP at today's cooling on the same plant.
+        T_discharge_K, p_cond_Pa: At full.
+        needed_W: Cooling to deliver.
+    """
+
+    cooling_W: FloatArray
+    power_W: FloatArray
+    cop: FloatArray
+    T_discharge_K: FloatArray
+    p_cond_Pa: FloatArray
+    needed_W: FloatArray
+
+
+@dataclass(frozen=True)
+class YearRows:
+    """A refrigerant over a year, row by row; arrays of shape (rows,).
+
+    Attributes:
+        energy_J: Electricity of the year.
+        peak_W: Highest electrical power.
+        unmet_J: Load that stays unmet.
+    """
+
+    energy_J: FloatArray
+    peak_W: FloatArray
+    unmet_J: FloatArray
+
+
+@dataclass(frozen=True)
+class ModelError:
+    """Factors on what the model says of a refrigerant against today's: capacity and COP, shape (rows,)."""
+
+    capacity: FloatArray
+    cop: FloatArray
+
+
+def today_rows(case: Case, existing: Fluid, rows: Sample) -> Today:
+    """Return the plant with today's refrigerant for every row.
+
+    Args:
+        case: The case.
+        existing: The refrigerant in the plant.
+        rows: Values of the inputs.
+    Raises: RetrofitError if no row can be solved.
+    """
+    numbers = {_attribute(key): rows.values[key] for key in PHYSICAL if key in rows.values and key not in EFFICIENCIES}
+    base = 1.0, 1.0
+    if not has_curve(case):
+        base = case.compressor.isentropic_efficiency, case.compressor.volumetric_efficiency
+    factors = [rows.pick(key, single(value)) / value for key, value in zip(EFFICIENCIES, base, strict=True)]
+    return today_of(with_numbers(case, numbers), existing.as_lenient(), (factors[0], factors[1]))
+
+
+def _attribute(key: str) -> str:
+    return f"{key.partition('.')[0]}.{FIELDS[key][0]}"
+
+
+def design_rows(today: Today, behaviour: Fluid, error: ModelError) -> DesignRows:
+    """Return what a refrigerant does at the design point, row by row.
+
+    Args:
+        today: The plant with today's refrigerant, for every row.
+        behaviour: The refrigerant.
+        error: Factors on what its model says.
+    """
+    if today.plant is None:
+        return _at_temperatures(today, behaviour, error)
+    plant = today.plant
+    inlets = [np.asarray(side.secondary.T_in_K) for side in (plant.machine.evaporator, plant.machine.condenser)]
+    machine, starts = YearPlant(plant, behaviour, -np.inf, 1.0, "").at(inlets[0], inlets[1])
+    loads = np.stack(np.broadcast_arrays(np.nan, plant.today_W))
+    found = balanced(balance(behaviour, machine, *starts, loads))
+    cooling, cop = found.cooling_W[0] * error.capacity, found.cop[1] * error.cop
+    power = cooling / (found.cop[0] * error.cop)
+    return DesignRows(cooling, power, cop, found.T_discharge_K[0], found.p_cond_Pa[0], np.asarray(plant.needed_W))
+
+
+def _at_temperatures(today: Today, behaviour: Fluid, error: ModelError) -> DesignRows:
+    """Return the same with the existing compressor at equal temperatures, where the exchangers are not known."""
+    found: Performance[FloatArray] = performance(today.cycle(behaviour.as_lenient()), today.case.duty.cooling_W)
+    full = at_swept_volume(found, today.swept_volume_m3_per_s)
+    cooling, cop = full.cooling_W * error.capacity, full.cop * error.cop
+    needed = np.asarray(today.case.duty.cooling_W)
+    return DesignRows(cooling, cooling / cop, cop, full.T_discharge_K, full.p_cond_Pa, needed)
+
+
+# The year by maps
+
+
+@dataclass(frozen=True)
+class Cells:
+    """A year with like conditions taken together; arrays of shape (cells,), means weighted by hours.
+
+    Attributes:
+        hours: Hours in each. [h]
+        T_air_K, T_cond_in_K, T_evap_in_K, day_factor, load_W: As in `YearConditions`.
+    """
+
+    hours: FloatArray
+    T_air_K: FloatArray
+    T_cond_in_K: FloatArray
+    T_evap_in_K: FloatArray
+    day_factor: FloatArray
+    load_W: FloatArray
+
+
+def cells_of(asked: YearConditions) -> Cells:
+    """Return a year with like conditions taken together.
+
+    Args:
+        asked: What the year asks.
+    """
+    columns = np.stack([asked.T_air_K, asked.T_cond_in_K, asked.T_evap_in_K, asked.day_factor, asked.load_W])
+    steps = np.array([CELL_K, CELL_K, CELL_K, CELL_SHARE])[:, None]
+    _, place = np.unique(np.round(columns[:4] / steps), axis=1, return_inverse=True)
+    hours = np.bincount(place, asked.hours).astype(np.float64)
+    means = [np.bincount(place, column * asked.hours) / hours for column in columns]
+    return Cells(hours, *means)
+
+
+@dataclass(frozen=True)
+class YearByMap:
+    """Everything of a year that is the same for every refrigerant.
+
+    Attributes:
+        case: The case, its numbers arrays of shape (rows,).
+        cells: The year.
+        shift_K: Shift of the weather, shape (rows,).
+        load_W: Load, shape (cells, rows).
+        serves: "cooling" or "heating".
+    """
+
+    case: Case
+    cells: Cells
+    shift_K: FloatArray
+    load_W: FloatArray
+    serves: str
+
+
+def year_by_map(today: Today, asked: YearConditions, rows: Sample) -> YearByMap:
+    """Return what every refrigerant's year by its map needs.
+
+    Args:
+        today: The plant with today's refrigerant, for every row.
+        asked: What the year asks.
+        rows: Values of the inputs.
+    """
+    cells, shift = cells_of(asked), rows.pick(WEATHER, single(0.0))
+    load = load_W(today.case, cells.T_air_K[:, None] + shift, cells.day_factor[:, None])
+    return YearByMap(today.case, cells, shift, np.broadcast_to(load, (cells.hours.size, rows.rows)), asked.serves)
+
+
+def year_rows(ready: YearPlant, base: YearPlant, year: YearByMap, error: ModelError, energy_J: float) -> YearRows:
+    """Return a year with a refrigerant, row by row, from a map of the plant for each row.
+
+    Args:
+        ready: The plant with its refrigerant, for every row.
+        base: The same by the numbers of the case alone.
+        year: The year.
+        error: Factors on what the model says of the refrigerant.
+        energy_J: Electricity of the year of the base, every hour balanced; the rows are brought to it. [J]
+    Source: capacity and power at full between the nodes of a map, linear; a machine of variable speed takes at part
+        load the share of that power that it takes in the base.
+    """
+    able, power = (_between(year, values) for values in _maps(ready, year))
+    able, power = able * error.capacity, power * error.capacity / error.cop
+    share = np.minimum(year.load_W / able, 1.0)
+    unmet = np.where(np.isnan(able), year.load_W, np.maximum(year.load_W - able, 0.0))
+    saved, run_time = _part_load(base, year, share)
+    settings = year.case.year
+    assert settings is not None
+    steady = sum(map(or_nothing, (settings.evaporator_fans_W, settings.pumps_W, settings.defrost_power_W)))
+    total = electric_W(year.case, np.nan_to_num(power * share * saved))
+    total = total + or_nothing(settings.condenser_fans_W) * np.nan_to_num(run_time, nan=1.0) + steady
+    energy = np.einsum("c,cr->r", year.cells.hours, total) * HOUR_S
+    scale = energy_J / energy[0]
+    unmet_J = np.einsum("c,cr->r", year.cells.hours, unmet) * HOUR_S
+    return YearRows(energy * scale, total.max(axis=0) * scale, unmet_J)
+
+
+@dataclass(frozen=True)
+class _Axis:
+    """Nodes along one inlet temperature: shape (nodes, 1), or (1, rows) where it keeps the case's own."""
+
+    T_K: FloatArray
+
+    def around(self, T_K: FloatArray) -> tuple[NDArray[np.int64], FloatArray]:
+        """Return the node below each temperature and the share of the way to the next one."""
+        nodes = self.T_K[:, 0]
+        if nodes.size == 1:
+            return np.zeros(T_K.shape, dtype=np.int64), np.zeros(T_K.shape)
+        way = np.clip((T_K - nodes[0]) / (nodes[1] - nodes[0]), 0.0, nodes.size - 1.0)
+        below = np.minimum(way.astype(np.int64), nodes.size - 2)
+        return below, way - below
+
+
+def _axes(year: YearByMap) -> tuple[_Axis, _Axis]:
+    """Return the nodes along the condenser's and the evaporator's inlet."""
+    case, reach = year.case, float(np.max(np.abs(year.shift_K)))
+    assert case.year is not None
+    assert case.condenser is not None
+    assert case.evaporator is not None
+    sides = (
+        (case.year.condenser_follows, case.condenser.inlet_K, year.cells.T_cond_in_K),
+        (case.year.evaporator_follows, case.evaporator.inlet_K, year.cells.T_evap_in_K),
+    )
+    both = all(follows != "constant" for follows, _, _ in sides)
+    found = []
+    for place, (follows, own, T_K) in enumerate(sides):
+        if follows == "constant":
+            found.append(_Axis(np.broadcast_to(np.asarray(own, dtype=float), year.shift_K.shape)[None, :]))
+        else:
+            nodes = FEW_NODES if both and place == 1 else NODES
+            found.append(_Axis(np.linspace(T_K.min() - reach, T_K.max() + reach, nodes)[:, None]))
+    return found[0], found[1]
+
+
+def _maps(ready: YearPlant, year: YearByMap) -> tuple[FloatArray, FloatArray]:
+    """Return what the plant delivers and takes at full at every node, shape (sinks, sources, rows)."""
+    sinks, sources = _axes(year)
+    machine, starts = ready.at(sources.T_K[None, :, :], sinks.T_K[:, None, :])
+    found = balanced(balance(ready.behaviour, machine, *starts))
+    shape = (sinks.T_K.shape[0], sources.T_K.shape[0], year.shift_K.size)
+    return np.broadcast_to(delivered_W(found, year.serves), shape), np.broadcast_to(found.power_W, shape)
+
+
+def _between(year: YearByMap, values: FloatArray) -> FloatArray:
+    """Return values of a map at the temperatures of every cell and row, shape (cells, rows)."""
+    found = np.zeros_like(year.load_W)
+    row = np.arange(year.shift_K.size)
+    steps = [
+        axis.around(T_K[:, None] + year.shift_K)
+        for axis, T_K in zip(_axes(year), (year.cells.T_cond_in_K, year.cells.T_evap_in_K), strict=True)
+    ]
+    for corner in np.ndindex(2, 2):
+        weight = np.ones_like(found)
+        places = []
+        for (below, way), up, size in zip(steps, corner, values.shape, strict=False):
+            weight = weight * (way if up else 1.0 - way)
+            places.append(np.minimum(below + up, size - 1))
+        found += np.where(weight > 0.0, weight * values[places[0], places[1], row], 0.0)
+    return found
+
+
+def _part_load(base: YearPlant, year: YearByMap, share: FloatArray) -> tuple[FloatArray | float, FloatArray]:
+    """Return power over that of running part of the time, and run time; of the base for a variable speed."""
+    compressor = base.plant.case.compressor
+    if compressor.speed != "variable":
+        return 1.0, share
+    machine, starts = base.at(year.cells.T_evap_in_K, year.cells.T_cond_in_K)
+    full = balanced(balance(base.behaviour, machine, *starts))
+    run = operating(base.behaviour, machine, compressor, full, year.load_W[:, 0], starts, year.serves)
+    simple = full.power_W * np.minimum(year.load_W[:, 0] / delivered_W(full, year.serves), 1.0)
+    return (run.mean_power_W / simple)[:, None], np.broadcast_to(run.run_time_fraction[:, None], share.shape)
