@@ -27,6 +27,7 @@ SOLVED_BELOW = 1e-6
 MOST_STEPS = 40
 LONGEST_STEP_K = 10.0
 SMALLEST_LEAD_K = 0.1
+STILL_OPEN = 0.7  # share of conditions below which those that are settled are put aside
 CHUNK = 2048  # conditions solved together: small enough for the processor's cache
 EVAPORATOR_PARTS, CONDENSER_PARTS = 4, 4
 DESUPERHEATING = np.array([0.0, 0.35, 0.7])  # shares of the way from discharge to dew point
@@ -277,22 +278,39 @@ def _in_reach(
 def _solve(fluid: Fluid, machine: Machine, conditions: _Conditions) -> Balance:
     """Solve a chunk of conditions."""
     given = conditions.arrays
+    lowest, highest = fluid.T_range_K[0] + 0.5, fluid.T_range_K[1] - 0.05
+    start = np.clip(np.stack([given["T_evap"], given["T_cond"]]), lowest, highest)
+    T = _settled(fluid, machine, given, start, (lowest, highest))
+    now = _state(fluid, machine, given, T)
+    error = np.max(_error(now), axis=0)
+    solved = error < SOLVED_BELOW
+    return _balance(now, error, np.where(solved, "", _reasons(T, given, lowest, highest)))
+
+
+def _settled(
+    fluid: Fluid, machine: Machine, given: Mapping[str, FloatArray], T: FloatArray, limits: tuple[float, float]
+) -> FloatArray:
+    """Return the temperatures at which conditions settle, or where the search for them ended, shape (2, n)."""
 
     def at(T: FloatArray) -> _State:
         return _state(fluid, machine, given, T)
 
-    lowest, highest = fluid.T_range_K[0] + 0.5, fluid.T_range_K[1] - 0.05
-    T = np.clip(np.stack([given["T_evap"], given["T_cond"]]), lowest, highest)
+    found, active = T.copy(), np.arange(T.shape[1])
     now = at(T)
     slopes = _slopes(at, T, now)
     for _ in range(MOST_STEPS):
-        if not np.any(_error(now) > RESIDUAL_TOLERANCE):
+        is_open = np.any(_error(now) > RESIDUAL_TOLERANCE, axis=0)
+        if not np.any(is_open):
             break
-        step = _newton_step(slopes, now.lack)
-        T, now, slopes = _stepped(at, T, now, slopes, step, (lowest, highest))
-    error = np.max(_error(now), axis=0)
-    solved = error < SOLVED_BELOW
-    return _balance(now, error, np.where(solved, "", _reasons(T, given, lowest, highest)))
+        if np.mean(is_open) < STILL_OPEN:
+            # The few that take longer, or have no solution, do not hold up the others.
+            found[:, active] = T
+            active, T, slopes = active[is_open], T[:, is_open], slopes[:, :, is_open]
+            given = {name: array[is_open] for name, array in given.items()}
+            now = at(T)
+        T, now, slopes = _stepped(at, T, now, slopes, _newton_step(slopes, now.lack), limits)
+    found[:, active] = T
+    return found
 
 
 def _error(state: _State) -> FloatArray:

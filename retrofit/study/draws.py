@@ -23,7 +23,7 @@ from retrofit.study.today import Today, today_of, with_numbers
 from retrofit.study.uncertain import EFFICIENCIES, PHYSICAL, WEATHER, Sample, has_curve
 from retrofit.study.year import HOUR_S, YearConditions, YearPlant, electric_W, load_W, or_nothing
 
-NODES, FEW_NODES = 12, 5  # of a row's map along its sinks, and along its sources where both vary
+NODES, FEW_NODES = 8, 5  # of a row's map along its sinks, and along its sources where both vary
 CELL_K, CELL_SHARE = 1.0, 0.05  # conditions of a year this close are taken together
 
 

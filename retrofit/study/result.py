@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass, field
-from typing import Generic, TypeVar
+from typing import TYPE_CHECKING, Generic, TypeVar
 
 import numpy as np
 from numpy.typing import NDArray
@@ -15,6 +15,9 @@ from retrofit.refrigerants import Caution, Refrigerant
 from retrofit.study.hardware.numbers import HardwareNumbers
 from retrofit.study.law import LawBasis, LawCheck
 from retrofit.study.room import RoomCheck
+
+if TYPE_CHECKING:
+    from retrofit.study.life import Life
 
 FloatArray = NDArray[np.float64]
 Number = TypeVar("Number", float, FloatArray)
@@ -329,6 +332,7 @@ class Comparison:
         versions: Versions the numbers depend on, by name.
         baseline: How the plant runs today, None if the case has no readings.
         law: Jurisdiction, day and tables behind what is said of law; None if the case names no jurisdiction.
+        life: Year, emissions, money and how sure they are; None until asked for.
     """
 
     case: Case
@@ -339,6 +343,7 @@ class Comparison:
     versions: Mapping[str, str]
     baseline: Baseline | None = None
     law: LawBasis | None = None
+    life: Life | None = None
 
     @property
     def entries(self) -> tuple[Entry, ...]:

@@ -78,18 +78,18 @@ class _Scaled:
         return self.model.covers(pressure_ratio, p_suction_Pa)
 
 
-def today_of(case: Case, existing: Fluid, factors: tuple[ArrayLike, ArrayLike] = (1.0, 1.0)) -> Today:
+def today_of(case: Case, existing: Fluid, factors: tuple[ArrayLike, ArrayLike] | None = None) -> Today:
     """Solve the refrigerant in the plant from its reading: targets, swept volume and the plant as installed.
 
     Args:
         case: The case; its numbers may be arrays.
         existing: The refrigerant in the plant.
-        factors: Factors on the isentropic and the volumetric efficiency of the compressor. [-]
+        factors: Factors on the isentropic and the volumetric efficiency of the compressor; None for none. [-]
     Raises: RetrofitError with the reason if it cannot be solved.
     """
     _check_subcooling(case)
     settings, own = _settings(case), efficiency_model(case, existing)
-    model: EfficiencyModel = own if factors == (1.0, 1.0) else _Scaled(own, factors)
+    model: EfficiencyModel = own if factors is None else _Scaled(own, factors)
     reading = Temperatures(case.duty.T_evap_K, case.duty.T_cond_K, case.duty.reading)
     targets = cycle_temperatures(_cycle(existing, reading, settings, model), case.compare.match)
     # From here on the existing refrigerant goes the way of every other, so that against itself nothing changes.
@@ -102,7 +102,7 @@ def today_of(case: Case, existing: Fluid, factors: tuple[ArrayLike, ArrayLike] =
         plant = existing_plant(case, existing, cycle, model, swept)
     except NoSolutionError as error:
         reason = error.message
-    if plant is not None and model is not own:
+    if plant is not None and factors is not None:
         # The balance solves conditions in parts: factors that differ between conditions go with the machine.
         isentropic, volumetric = factors
         machine = replace(
@@ -125,7 +125,7 @@ def _settings(case: Case) -> Settings:
         useful_superheat_K=duty.useful_superheat_K,
         line_superheat_K=duty.line_superheat_K,
         subcooling_K=duty.subcooling_K,
-        heat_loss_share=case.compressor.heat_loss or 0.0,
+        heat_loss_share=0.0 if case.compressor.heat_loss is None else case.compressor.heat_loss,
         suction_drop_K=evaporator.pressure_drop_K if evaporator else 0.0,
         discharge_drop_K=condenser.pressure_drop_K if condenser else 0.0,
     )
