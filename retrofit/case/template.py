@@ -210,6 +210,7 @@ match = "mean"                   # refrigerants are compared at equal mean (or d
 
 # [year]                         # it needs [evaporator] and [condenser]: the plant as installed runs through it
 # bins = [["2 degC", 4000], ["12 degC", 4000], ["24 degC", 760]]   # outdoor air and its hours, 8760 in all
+#                                or by day and by night, as in [["2 degC", 1800, 2200], ...]
 #| weather = "hours.csv"         # or a file beside this one with 8760 rows below the heading
 #|                                 hour,dry_bulb [degC] and, if needed, wet_bulb [degC] or water [degC]
 # condenser_follows = "dry bulb"   # what its inlet follows: constant, dry bulb, wet bulb or water

@@ -27,6 +27,7 @@ class Weather:
         T_wet_bulb_K, T_water_K: Wet bulb, and water that a condenser or evaporator draws; None if not given. [K]
         hour_of_day: Hour at which each condition begins, 0 to 23; None for bins. [h]
         month: Month of each condition, 1 to 12; None for bins. [-]
+        night_hours: Hours by night of each condition; None where the hour of the day or nothing tells it. [h]
         text: The file as read, so that a report can carry it; empty if there is none. [-]
     """
 
@@ -38,6 +39,7 @@ class Weather:
     hour_of_day: FloatArray | None = None
     month: IntArray | None = None
     text: str = ""
+    night_hours: FloatArray | None = None
 
     def __eq__(self, other: object) -> bool:
         """Say whether another weather is the same, number by number."""
@@ -57,8 +59,8 @@ def weather_of_bins(bins: Sequence[Bin]) -> Weather:
     Args:
         bins: Outdoor temperatures and their hours. [K, h]
     """
-    T, hours = np.array(bins, dtype=float).T
-    return Weather("bins of the case", hours, T)
+    T, hours, night = np.array(bins, dtype=float).T  # a night not told is NaN
+    return Weather("bins of the case", hours, T, night_hours=None if np.isnan(night).any() else night)
 
 
 def weather_of_climate(climate: Climate) -> Weather:

@@ -56,6 +56,8 @@ def _bins(written: Written) -> Complaints:
         if found is not None and times[found.T_air_K] > 1 and found.T_air_K in seen:
             yield (*path_of("year.bins"), index), f"{quoted(str(raw[index][0]))} is in the list twice; add up its hours"
         seen |= {found.T_air_K} if found is not None else set()
+    if len({found.night_hours is None for found in bins if found is not None}) > 1:
+        yield path_of("year.bins"), "some bins tell day and night apart and others do not; write all of them alike"
     hours = sum(found.hours for found in bins if found is not None)
     if bins and None not in bins and abs(hours - HOURS_OF_A_YEAR) > HOURS_TOLERANCE:
         off = abs(hours - HOURS_OF_A_YEAR)

@@ -24,15 +24,16 @@ FOLLOWS = ("constant", "dry bulb", "wet bulb", "water")
 
 
 class Bin(NamedTuple):
-    """Hours of the year at one outdoor temperature."""
+    """Hours of the year at one outdoor temperature, and how many of them lie by night, if that is told."""
 
     T_air_K: float
     hours: float
+    night_hours: float | None = None
 
 
 @dataclass(frozen=True)
 class BinValue(FileValue):
-    """A list of a temperature and a number of hours."""
+    """A list of a temperature and its hours; or of its hours by day and by night."""
 
     hours = Number(0, HOURS_OF_A_YEAR, "a year has 8760 hours", example="340")
 
@@ -42,15 +43,16 @@ class BinValue(FileValue):
 
     def read(self, value: object, p_ambient_Pa: float | None = None) -> Bin:
         """Return the bin."""
-        if not isinstance(value, list) or len(value) != 2:
-            wanted = "a temperature and its hours of the year are needed"
+        if not isinstance(value, list) or len(value) not in (2, 3):
+            wanted = "a temperature and its hours, or its hours by day and by night, are needed"
             raise QuantityError(f"{described(value)} stands where {wanted}, as in {self.sample()}")
-        return Bin(_AIR.read(value[0]), float(self.hours.read(value[1])))
+        T_air_K, hours = _AIR.read(value[0]), [float(self.hours.read(item)) for item in value[1:]]
+        return Bin(T_air_K, sum(hours), hours[1] if len(hours) > 1 else None)
 
     def json_schema(self) -> dict[str, Any]:
-        """Return a list of a text and a number."""
-        items = [_AIR.json_schema(), self.hours.json_schema()]
-        return {"type": "array", "prefixItems": items, "minItems": 2, "maxItems": 2}
+        """Return a list of a text and one or two numbers."""
+        items = [_AIR.json_schema(), self.hours.json_schema(), self.hours.json_schema()]
+        return {"type": "array", "prefixItems": items, "minItems": 2, "maxItems": 3}
 
 
 _BIN = BinValue()

@@ -149,8 +149,8 @@ def year_conditions(case: Case) -> YearConditions | None:
 
     Args:
         case: The case.
-    Source: load between base and peak is linear in the outdoor temperature, constant beyond both; bins know no hour
-        of the day, so that each stands for day and night by their shares.
+    Source: load between base and peak is linear in the outdoor temperature, constant beyond both; bins that do not tell
+        day and night apart stand for both by their lengths.
     """
     year, weather = case.year, case.weather
     if year is None or weather is None or case.evaporator is None or case.condenser is None:
@@ -177,11 +177,14 @@ def year_conditions(case: Case) -> YearConditions | None:
     )
 
 
-def _day_and_night(year: Year, weather: Weather) -> tuple[tuple[float, ...], tuple[ArrayLike, ...]]:
+def _day_and_night(year: Year, weather: Weather) -> tuple[tuple[ArrayLike, ...], tuple[ArrayLike, ...]]:
     """Return shares of the hours and the factors on the load that go with them."""
     if year.day_from is None or year.day_to is None or year.night_load is None:
         return (1.0,), (1.0,)
     length = (year.day_to - year.day_from) % DAY_H or DAY_H
+    if weather.night_hours is not None:
+        by_night = weather.night_hours / np.maximum(weather.hours, np.finfo(float).tiny)
+        return (1.0 - by_night, by_night), (1.0, year.night_load)
     if weather.hour_of_day is None:
         return (length / DAY_H, 1.0 - length / DAY_H), (1.0, year.night_load)
     # An hour that the day begins or ends within counts by its share.

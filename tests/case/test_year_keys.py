@@ -38,7 +38,7 @@ def test_a_year_as_written(case):
         'lowest_condensing = "25 degC"\nmetered = "300000 kWh"\nevaporator_fans = "5 hp"\n'
     ).year
 
-    assert year.bins[0] == (275.15, 4000.0)
+    assert year.bins[0] == (275.15, 4000.0, None)
     assert (year.peak_load_W, year.peak_at_K, year.base_load_W, year.base_at_K) == (None, 303.15, 60_000.0, 278.15)
     assert (year.day_from, year.day_to, year.night_load) == (7.0, 21.0, pytest.approx(0.7))
     assert year.evaporator_fans_W == pytest.approx(5 * 745.6999)  # horsepower: NIST SP 811
@@ -189,3 +189,15 @@ def test_a_wrong_option_is_refused(complaints, text, key, words):
 
     assert len(found) == 1, found
     assert words in found[0]
+
+
+def test_bins_may_tell_day_and_night_apart(case, complaints):
+    """Three numbers are a temperature and its hours by day and by night; then every bin has three."""
+    apart = START.replace(BINS, 'bins = [["2 degC", 1000, 3000], ["12 degC", 2760, 2000]]\n') + LOADS
+    mixed = START.replace(BINS, 'bins = [["2 degC", 1000, 3000], ["12 degC", 4760]]\n') + LOADS
+
+    assert case(apart).year.bins[0] == (275.15, 4000.0, 3000.0)
+    assert list(case(apart).weather.night_hours) == [3000.0, 2000.0]
+    assert [text for _, key, text in complaints(mixed) if key == "year.bins"] == [
+        "some bins tell day and night apart and others do not; write all of them alike"
+    ]
