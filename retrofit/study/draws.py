@@ -24,6 +24,7 @@ from retrofit.study.uncertain import EFFICIENCIES, PHYSICAL, WEATHER, Sample, ha
 from retrofit.study.year import HOUR_S, YearConditions, YearPlant, electric_W, load_W, or_nothing
 
 NODES, FEW_NODES = 8, 5  # of a row's map along its sinks, and along its sources where both vary
+SHARES = np.array([0.1, 0.25, 0.4, 0.6, 0.8, 1.0])  # of what the plant can, at which part load is solved
 CELL_K, CELL_SHARE = 1.0, 0.05  # conditions of a year this close are taken together
 
 
@@ -193,14 +194,16 @@ def year_rows(ready: YearPlant, base: YearPlant, year: YearByMap, error: ModelEr
         year: The year.
         error: Factors on what the model says of the refrigerant.
         energy_J: Electricity of the year of the base, every hour balanced; the rows are brought to it. [J]
-    Source: capacity and power at full between the nodes of a map, linear; a machine of variable speed takes at part
-        load the share of that power that it takes in the base.
+    Source: capacity and power at full between the nodes of a map, linear; a machine of variable speed takes at a
+        share of its load the share of that power that it takes with the numbers of the case alone.
     """
-    able, power = (_between(year, values) for values in _maps(ready, year))
+    axes = _axes(year)
+    inlets = tuple(T_K[:, None] + year.shift_K for T_K in (year.cells.T_cond_in_K, year.cells.T_evap_in_K))
+    able, power = (_between(axes, inlets, values) for values in _maps(ready, axes, year))
     able, power = able * error.capacity, power * error.capacity / error.cop
     share = np.minimum(year.load_W / able, 1.0)
     unmet = np.where(np.isnan(able), year.load_W, np.maximum(year.load_W - able, 0.0))
-    saved, run_time = _part_load(base, year, share)
+    saved, run_time = _part_load(base, axes, year, share)
     settings = year.case.year
     assert settings is not None
     steady = sum(map(or_nothing, (settings.evaporator_fans_W, settings.pumps_W, settings.defrost_power_W)))
@@ -249,26 +252,22 @@ def _axes(year: YearByMap) -> tuple[_Axis, _Axis]:
     return found[0], found[1]
 
 
-def _maps(ready: YearPlant, year: YearByMap) -> tuple[FloatArray, FloatArray]:
+def _maps(ready: YearPlant, axes: tuple[_Axis, _Axis], year: YearByMap) -> tuple[FloatArray, FloatArray]:
     """Return what the plant delivers and takes at full at every node, shape (sinks, sources, rows)."""
-    sinks, sources = _axes(year)
-    machine, starts = ready.at(sources.T_K[None, :, :], sinks.T_K[:, None, :])
+    sinks, sources = (axis.T_K for axis in axes)
+    machine, starts = ready.at(sources[None, :, :], sinks[:, None, :])
     found = balanced(balance(ready.behaviour, machine, *starts))
-    shape = (sinks.T_K.shape[0], sources.T_K.shape[0], year.shift_K.size)
+    shape = (sinks.shape[0], sources.shape[0], year.shift_K.size)
     return np.broadcast_to(delivered_W(found, year.serves), shape), np.broadcast_to(found.power_W, shape)
 
 
-def _between(year: YearByMap, values: FloatArray) -> FloatArray:
-    """Return values of a map at the temperatures of every cell and row, shape (cells, rows)."""
-    found = np.zeros_like(year.load_W)
-    row = np.arange(year.shift_K.size)
-    steps = [
-        axis.around(T_K[:, None] + year.shift_K)
-        for axis, T_K in zip(_axes(year), (year.cells.T_cond_in_K, year.cells.T_evap_in_K), strict=True)
-    ]
+def _between(axes: tuple[_Axis, _Axis], inlets_K: tuple[FloatArray, ...], values: FloatArray) -> FloatArray:
+    """Return values of a map, shape (sinks, sources, rows), at inlet temperatures of shape (cells, rows)."""
+    steps = [axis.around(T_K) for axis, T_K in zip(axes, inlets_K, strict=True)]
+    row = np.arange(values.shape[2])
+    found = np.zeros(inlets_K[0].shape)
     for corner in np.ndindex(2, 2):
-        weight = np.ones_like(found)
-        places = []
+        weight, places = np.ones(found.shape), []
         for (below, way), up, size in zip(steps, corner, values.shape, strict=False):
             weight = weight * (way if up else 1.0 - way)
             places.append(np.minimum(below + up, size - 1))
@@ -276,13 +275,35 @@ def _between(year: YearByMap, values: FloatArray) -> FloatArray:
     return found
 
 
-def _part_load(base: YearPlant, year: YearByMap, share: FloatArray) -> tuple[FloatArray | float, FloatArray]:
-    """Return power over that of running part of the time, and run time; of the base for a variable speed."""
+def _part_load(
+    base: YearPlant, axes: tuple[_Axis, _Axis], year: YearByMap, share: FloatArray
+) -> tuple[FloatArray | float, FloatArray]:
+    """Return power over that of running part of the time, and run time, at shares of what the plant can.
+
+    A machine that starts and stops takes its full power for that share of the time. For one of variable speed both
+    are solved at some shares with the numbers of the case alone, and interpolated.
+    """
     compressor = base.plant.case.compressor
     if compressor.speed != "variable":
         return 1.0, share
-    machine, starts = base.at(year.cells.T_evap_in_K, year.cells.T_cond_in_K)
+    nodes = [axis.T_K[:, 0] for axis in axes]
+    machine, starts = base.at(nodes[1][None, :, None], nodes[0][:, None, None])
     full = balanced(balance(base.behaviour, machine, *starts))
-    run = operating(base.behaviour, machine, compressor, full, year.load_W[:, 0], starts, year.serves)
-    simple = full.power_W * np.minimum(year.load_W[:, 0] / delivered_W(full, year.serves), 1.0)
-    return (run.mean_power_W / simple)[:, None], np.broadcast_to(run.run_time_fraction[:, None], share.shape)
+    load = delivered_W(full, year.serves) * SHARES
+    run = operating(base.behaviour, machine, compressor, full, load, starts, year.serves)
+    inlets = tuple(
+        np.repeat(T_K[:, None], SHARES.size, axis=1) for T_K in (year.cells.T_cond_in_K, year.cells.T_evap_in_K)
+    )
+    saved, run_time = (
+        _between(axes, inlets, values) for values in (run.mean_power_W / (full.power_W * SHARES), run.run_time_fraction)
+    )
+    return _at_shares(saved, share), _at_shares(run_time, share)
+
+
+def _at_shares(values: FloatArray, share: FloatArray) -> FloatArray:
+    """Return values known at SHARES, shape (cells, shares), at other shares, shape (cells, rows)."""
+    kept = np.clip(np.nan_to_num(share, nan=1.0), SHARES[0], SHARES[-1])
+    below = np.clip(np.searchsorted(SHARES, kept) - 1, 0, SHARES.size - 2)
+    way = (kept - SHARES[below]) / np.diff(SHARES)[below]
+    cell = np.arange(values.shape[0])[:, None]
+    return np.asarray(values[cell, below] * (1.0 - way) + values[cell, below + 1] * way)

@@ -177,7 +177,7 @@ def year_conditions(case: Case) -> YearConditions | None:
     )
 
 
-def _day_and_night(year: Year, weather: Weather) -> tuple[tuple[ArrayLike, ...], tuple[ArrayLike, ...]]:
+def _day_and_night(year: Year, weather: Weather) -> tuple[tuple[FloatArray | float, ...], tuple[FloatArray | float, ...]]:
     """Return shares of the hours and the factors on the load that go with them."""
     if year.day_from is None or year.day_to is None or year.night_load is None:
         return (1.0,), (1.0,)
