@@ -21,11 +21,10 @@ from retrofit.study.result import FloatArray, Performance
 from retrofit.study.spread import single
 from retrofit.study.today import Today, today_of, with_numbers
 from retrofit.study.uncertain import EFFICIENCIES, PHYSICAL, WEATHER, Sample, has_curve
-from retrofit.study.year import HOUR_S, YearConditions, YearPlant, electric_W, load_W, or_nothing
+from retrofit.study.year import HOUR_S, YearConditions, YearPlant, electric_W, load_W, or_nothing, together
 
 NODES, FEW_NODES = 8, 5  # of a row's map along its sinks, and along its sources where both vary
 SHARES = np.array([0.1, 0.25, 0.4, 0.6, 0.8, 1.0])  # of what the plant can, at which part load is solved
-CELL_K, CELL_SHARE = 1.0, 0.05  # conditions of a year this close are taken together
 
 
 @dataclass(frozen=True)
@@ -123,50 +122,19 @@ def _at_temperatures(today: Today, behaviour: Fluid, error: ModelError) -> Desig
 
 
 @dataclass(frozen=True)
-class Cells:
-    """A year with like conditions taken together; arrays of shape (cells,), means weighted by hours.
-
-    Attributes:
-        hours: Hours in each. [h]
-        T_air_K, T_cond_in_K, T_evap_in_K, day_factor, load_W: As in `YearConditions`.
-    """
-
-    hours: FloatArray
-    T_air_K: FloatArray
-    T_cond_in_K: FloatArray
-    T_evap_in_K: FloatArray
-    day_factor: FloatArray
-    load_W: FloatArray
-
-
-def cells_of(asked: YearConditions) -> Cells:
-    """Return a year with like conditions taken together.
-
-    Args:
-        asked: What the year asks.
-    """
-    columns = np.stack([asked.T_air_K, asked.T_cond_in_K, asked.T_evap_in_K, asked.day_factor, asked.load_W])
-    steps = np.array([CELL_K, CELL_K, CELL_K, CELL_SHARE])[:, None]
-    _, place = np.unique(np.round(columns[:4] / steps), axis=1, return_inverse=True)
-    hours = np.bincount(place, asked.hours).astype(np.float64)
-    means = [np.bincount(place, column * asked.hours) / hours for column in columns]
-    return Cells(hours, *means)
-
-
-@dataclass(frozen=True)
 class YearByMap:
     """Everything of a year that is the same for every refrigerant.
 
     Attributes:
         case: The case, its numbers arrays of shape (rows,).
-        cells: The year.
+        cells: The year, like conditions taken together.
         shift_K: Shift of the weather, shape (rows,).
         load_W: Load, shape (cells, rows).
         serves: "cooling" or "heating".
     """
 
     case: Case
-    cells: Cells
+    cells: YearConditions
     shift_K: FloatArray
     load_W: FloatArray
     serves: str
@@ -180,7 +148,7 @@ def year_by_map(today: Today, asked: YearConditions, rows: Sample) -> YearByMap:
         asked: What the year asks.
         rows: Values of the inputs.
     """
-    cells, shift = cells_of(asked), rows.pick(WEATHER, single(0.0))
+    cells, shift = together(asked), rows.pick(WEATHER, single(0.0))
     load = load_W(today.case, cells.T_air_K[:, None] + shift, cells.day_factor[:, None])
     return YearByMap(today.case, cells, shift, np.broadcast_to(load, (cells.hours.size, rows.rows)), asked.serves)
 

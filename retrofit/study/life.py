@@ -34,6 +34,7 @@ from retrofit.study.year import (
     YearRun,
     lowest_condensing_K,
     run_year,
+    together,
     year_by_maker,
     year_conditions,
     year_plant,
@@ -146,17 +147,20 @@ class _Way:
     reason: str = ""
 
 
-def life_of(comparison: Comparison, draws: int = DRAWS, seed: int = SEED) -> Life:
+def life_of(comparison: Comparison, draws: int = DRAWS, seed: int = SEED, *, hourly: bool = True) -> Life:
     """Return the remaining life of every option of a result.
 
     Args:
         comparison: An assessed result.
         draws: Number of draws of the inputs; 0 for none. [-]
         seed: The same seed gives the same numbers. [-]
+        hourly: Whether each hour is solved for itself; else like hours together, which takes a twentieth of the time.
     Returns: The remaining life; what cannot be computed has its reason.
     """
     case = comparison.case
     asked = year_conditions(case)
+    if asked is not None and not hourly:
+        asked = together(asked)
     today = None if comparison.existing.duty is None else today_of(case, fluid(case.plant.refrigerant))
     ways = [_way(today, entry) for entry in comparison.entries]
     years: dict[str, YearRun] = {}

@@ -18,6 +18,7 @@ from retrofit.study.year import (
     YearRun,
     lowest_condensing_K,
     run_year,
+    together,
     year_by_maker,
     year_conditions,
     year_plant,
@@ -114,6 +115,19 @@ def test_bins_agree_with_the_hours_they_are_made_of(rack_of, usual_year):
         for name in ("R404A", "R448A"):
             hourly, bins = (year_of(each, name).energy_J for each in (case, binned(case, by_day=by_day)))
             assert bins == pytest.approx(hourly, rel=0.01)
+
+
+@pytest.mark.parametrize("control", ["", 'speed = "variable"\nlowest_speed = "40 %"'])
+def test_like_hours_taken_together_lose_nothing(rack_of, control):
+    """A year with like hours taken together has all its hours and its load, and the hourly electricity to 0.1 %."""
+    case = rack_of(compressor=control)
+    asked = asked_of(case)
+    few = together(asked)
+
+    assert few.hours.size < 200
+    assert few.hours.sum() == pytest.approx(8760)
+    assert few.load_J == pytest.approx(asked.load_J)
+    assert year_of(case, "R448A", few).energy_J == pytest.approx(year_of(case, "R448A").energy_J, rel=1e-3)
 
 
 def test_day_and_night_share_the_hours(rack_of):
