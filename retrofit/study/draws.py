@@ -15,6 +15,7 @@ from retrofit.case import Case
 from retrofit.case.model import FIELDS
 from retrofit.equipment.balance import balance
 from retrofit.properties import Fluid
+from retrofit.study.installed import USUAL_SUPERHEAT_SHARE
 from retrofit.study.operating import balanced, delivered_W, operating
 from retrofit.study.performance import at_swept_volume, performance
 from retrofit.study.result import FloatArray, Performance
@@ -78,11 +79,24 @@ def today_rows(case: Case, existing: Fluid, rows: Sample) -> Today:
     Raises: RetrofitError if no row can be solved.
     """
     numbers = {_attribute(key): rows.values[key] for key in PHYSICAL if key in rows.values and key not in EFFICIENCIES}
+    numbers |= _superheat_in_reach(case, rows)
     base = 1.0, 1.0
     if not has_curve(case):
         base = case.compressor.isentropic_efficiency, case.compressor.volumetric_efficiency
     factors = [rows.pick(key, single(value)) / value for key, value in zip(EFFICIENCIES, base, strict=True)]
     return today_of(with_numbers(case, numbers), existing.as_lenient(), (factors[0], factors[1]))
+
+
+def _superheat_in_reach(case: Case, rows: Sample) -> dict[str, FloatArray]:
+    """Return useful superheat that gives way where a draw leaves the evaporator little difference to make it with."""
+    duty, evaporator = case.duty, case.evaporator
+    if evaporator is None or evaporator.inlet_K is None or evaporator.arrangement == "flooded":
+        return {}
+    inlet = rows.pick("evaporator.inlet", single(evaporator.inlet_K))
+    lead = inlet - rows.pick("duty.evaporating", single(duty.T_evap_K))
+    drawn = rows.pick("duty.useful_superheat", single(duty.useful_superheat_K))
+    share = max(USUAL_SUPERHEAT_SHARE, duty.useful_superheat_K / (evaporator.inlet_K - duty.T_evap_K))
+    return {"duty.useful_superheat_K": np.minimum(drawn, np.maximum(share * lead, 0.0))}
 
 
 def _attribute(key: str) -> str:
@@ -177,6 +191,8 @@ def year_rows(ready: YearPlant, base: YearPlant, year: YearByMap, error: ModelEr
     steady = sum(map(or_nothing, (settings.evaporator_fans_W, settings.pumps_W, settings.defrost_power_W)))
     total = electric_W(year.case, np.nan_to_num(power * share * saved))
     total = total + or_nothing(settings.condenser_fans_W) * np.nan_to_num(run_time, nan=1.0) + steady
+    # A row that has no solution at all has no year; single hours without one are hours of unmet load.
+    total = np.where(np.all(np.isnan(able), axis=0), np.nan, total)
     energy = np.einsum("c,cr->r", year.cells.hours, total) * HOUR_S
     scale = energy_J / energy[0]
     unmet_J = np.einsum("c,cr->r", year.cells.hours, unmet) * HOUR_S

@@ -18,19 +18,66 @@ import numpy as np
 
 from retrofit.case import Case, meaning
 from retrofit.case.model import FIELDS
+from retrofit.case.values import FileValue
 from retrofit.study.spread import FloatArray, Spread, single, triangular
 
 WEATHER = "year.weather"  # the weather of the year as a whole: a shift
 EFFICIENCIES = ("compressor.isentropic_efficiency", "compressor.volumetric_efficiency")
-# Keys of the case whose numbers the plant is solved with as arrays.
-PHYSICAL = (
-    "duty.cooling", "duty.evaporating", "duty.condensing", "duty.useful_superheat", "duty.line_superheat",
-    "duty.subcooling", *EFFICIENCIES, "compressor.swept_volume", "compressor.motor_efficiency", "compressor.heat_loss",
-    "evaporator.inlet", "evaporator.outlet", "evaporator.flow", "condenser.inlet", "condenser.outlet", "condenser.flow",
-    "year.peak_load", "year.base_load", "year.condenser_fans", "year.evaporator_fans", "year.pumps",
-    "year.defrost_power",
-)  # fmt: skip
+# Keys of the case whose numbers the plant is solved with as arrays, and what they are for a reader.
+PHYSICAL = {
+    "duty.cooling": "Cooling needed",
+    "duty.evaporating": "Evaporating temperature today",
+    "duty.condensing": "Condensing temperature today",
+    "duty.useful_superheat": "Useful superheat",
+    "duty.line_superheat": "Superheat of the suction line",
+    "duty.subcooling": "Subcooling",
+    "compressor.isentropic_efficiency": "Isentropic efficiency",
+    "compressor.volumetric_efficiency": "Volumetric efficiency",
+    "compressor.swept_volume": "Swept volume",
+    "compressor.motor_efficiency": "Motor efficiency",
+    "compressor.heat_loss": "Heat loss of the compressor",
+    "evaporator.inlet": "Medium into the evaporator",
+    "evaporator.outlet": "Medium out of the evaporator",
+    "evaporator.flow": "Flow through the evaporator",
+    "condenser.inlet": "Medium into the condenser",
+    "condenser.outlet": "Medium out of the condenser",
+    "condenser.flow": "Flow through the condenser",
+    "year.peak_load": "Peak load",
+    "year.base_load": "Base load",
+    "year.condenser_fans": "Condenser fans",
+    "year.evaporator_fans": "Evaporator fans",
+    "year.pumps": "Pumps",
+    "year.defrost_power": "Defrosting",
+}
+NAMES = {
+    **PHYSICAL,
+    WEATHER: "Outdoor temperature of the year, shifted",
+    "plant.charge": "Charge today",
+    "law.annual_leak_rate": "Leak rate",
+    "law.equipment": "Leak rate, by type of equipment",
+    "law.remaining_life": "Remaining life",
+    "emissions.leak_rate": "Leak rate",
+    "emissions.leak_rate_after": "Leak rate after a change",
+    "emissions.leak_log": "Leak rate, by the log of top-ups",
+    "emissions.grid_factor": "Grid factor",
+    "emissions.grid_years": "Grid factor of every year, times",
+    "emissions.recovery_at_end": "Recovery at the end of life",
+    "emissions.lost_at_change": "Loss at the change",
+    "money.tariff": "Price of electricity",
+    "money.demand_charge": "Demand charge",
+    "money.discount_rate": "Discount rate",
+    "money.leak_check": "Cost of a leak check",
+    "money.levy": "Levy on refrigerant",
+    "money.yearly_service": "Yearly service",
+}
 LEAK_RATES = ("emissions.leak_rate", "emissions.leak_rate_after", "law.annual_leak_rate", "law.equipment")
+OPTION_KINDS = {"charge": "mass", "leak_rate": "fraction", "contingency": "fraction"}
+OWN_KINDS = {
+    WEATHER: "temperature difference",
+    "law.equipment": "fraction",
+    "emissions.leak_log": "fraction",
+    "emissions.grid_years": "ratio",
+}
 NOT_BELOW_ZERO = ("temperature difference", "fraction")
 
 
@@ -187,25 +234,18 @@ def named(case: Case, key: str) -> tuple[str, str]:
         key: Its key.
     """
     table, _, rest = key.partition(".")
-    if key == WEATHER:
-        return "temperature difference", "Outdoor temperature of the year, shifted"
-    if key == "law.equipment":
-        return "fraction", "Leak rate, by type of equipment"
-    if key == "emissions.leak_log":
-        return "fraction", "Leak rate, by the log of top-ups"
-    if key == "emissions.grid_years":
-        return "ratio", "Grid factor of every year, times"
-    if table == "options":
-        name, _, item = rest.partition(".")
-        kinds = {"charge": "mass", "leak_rate": "fraction", "contingency": "fraction"}
-        return kinds.get(item, ""), f"{item.replace('_', ' ').capitalize()} of {name}"
+    if table == "options" or key.startswith("money.change."):
+        name, _, item = rest.rpartition(".")
+        words = item.replace("_", " ").capitalize()
+        return OPTION_KINDS.get(item, ""), words if name == "change" else f"{words} of {name}"
     if key.startswith("money.refrigerant_price."):
         return "", f"Price of {key.rpartition('.')[2]}"
-    if key not in FIELDS:
-        return "", key
-    how = next((extra for extra in FIELDS[key][1].metadata if hasattr(extra, "shown_kind")), None)
-    kind = "ratio" if key in EFFICIENCIES and has_curve(case) else how.shown_kind() if how else ""
-    return "fraction" if key in EFFICIENCIES and kind != "ratio" else kind, meaning(key).rstrip(".")
+    if key in OWN_KINDS or (key in EFFICIENCIES and has_curve(case)):
+        return OWN_KINDS.get(key, "ratio"), NAMES[key]
+    _, field = FIELDS.get(key, ("", None))
+    how = next((extra for extra in (field.metadata if field else ()) if isinstance(extra, FileValue)), None)
+    kind = "fraction" if key in EFFICIENCIES else how.shown_kind() if how else ""
+    return kind, NAMES.get(key, meaning(key).rstrip("."))
 
 
 def sample(inputs: Iterable[Uncertain], draws: int, seed: int) -> Sample:
