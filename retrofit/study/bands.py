@@ -17,7 +17,6 @@ from importlib.resources import files
 from operator import attrgetter
 from typing import Any
 
-from retrofit.properties import Grade
 from retrofit.study.result import Entry
 
 STEPS = {"relative": 0.01, "K": 1.0}
@@ -93,12 +92,15 @@ def bands_of(entry: Entry) -> Mapping[str, Band]:
     Args:
         entry: The refrigerant.
     """
-    return _widened(*max(_offsets(entry.grade), key=lambda found: found[0]))
+    return _widened(*max(_offsets(entry), key=lambda found: found[0]))
 
 
-def _offsets(grade: Grade | None) -> Iterator[tuple[float, str]]:
+def _offsets(entry: Entry) -> Iterator[tuple[float, str]]:
     """Yield by how much a model has to be counted off, and why; the largest holds."""
-    table = _table()
+    table, grade = _table(), entry.grade
+    if grade is not None and grade.word == "not checked" and len(entry.refrigerant.composition) == 1:
+        yield table["single_substance"]["offset_K"], table["single_substance"]["reason"]
+        return
     if grade is None:
         yield max(row["offset_K"] for row in table["grade"].values()), table["no_grade"]["reason"]
         return

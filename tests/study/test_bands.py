@@ -16,7 +16,7 @@ import pytest
 from retrofit.cycle import Settings, solve_cycle
 from retrofit.properties import Grade, fluid, grade
 from retrofit.refrigerants import find
-from retrofit.study import Entry
+from retrofit.study import Entry, compare
 from retrofit.study.bands import (
     QUANTITIES,
     _table,
@@ -227,3 +227,12 @@ def test_groups_are_on_one_basis():
     assert not alike(with_cop(1.0, plant=installed), with_cop(1.0, plant=other), "cop")
     assert alike(with_cop(1.0, plant=installed), with_cop(1.0), "cop")
     assert {band for band, _, _ in QUANTITIES.values()} == set(NAMES)
+
+
+def test_a_single_substance_has_the_base_band(case_of):
+    """R744 has no boiling point at one atmosphere to be checked by, and no mixing that could be off."""
+    entry = compare(case_of(candidates=("R744",), duty={"condensing": "20 degC"})).candidates[0]
+
+    assert entry.grade.word == "not checked"
+    assert {name: band_of(entry, name) for name in model_band()} == {name: b.value for name, b in model_band().items()}
+    assert "single substance" in bands_of(entry)["cop"].reason
