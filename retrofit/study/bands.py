@@ -99,7 +99,7 @@ def _offsets(entry: Entry) -> Iterator[tuple[float, str]]:
     """Yield by how much a model has to be counted off, and why; the largest holds."""
     table, grade = _table(), entry.grade
     if grade is not None and grade.word == "not checked" and len(entry.refrigerant.composition) == 1:
-        yield table["single_substance"]["offset_K"], table["single_substance"]["reason"]
+        yield 0.0, ""  # by its reference equation: nothing of it is mixed, so nothing of that can be off
         return
     if grade is None:
         yield max(row["offset_K"] for row in table["grade"].values()), table["no_grade"]["reason"]

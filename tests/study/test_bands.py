@@ -235,4 +235,3 @@ def test_a_single_substance_has_the_base_band(case_of):
 
     assert entry.grade.word == "not checked"
     assert {name: band_of(entry, name) for name in model_band()} == {name: b.value for name, b in model_band().items()}
-    assert "single substance" in bands_of(entry)["cop"].reason
