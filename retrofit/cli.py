@@ -135,6 +135,13 @@ def _print_json(value: object) -> None:
 units_option = click.option(
     "--units", type=click.Choice(["si", "ip"]), default="si", show_default=True, help="Units of what is shown."
 )
+report_units_option = click.option(
+    "--units",
+    type=click.Choice(["si", "ip", "both"]),
+    default="si",
+    show_default=True,
+    help="Units of what is shown; of a spreadsheet with both, si.",
+)
 on_option = click.option(
     "--on",
     type=click.DateTime(["%Y-%m-%d"]),
@@ -229,7 +236,7 @@ def compare(case_file: Path, units: str, as_json: bool, as_csv: bool, on: dateti
 @click.option("-o", "--output", type=CASE, help="HTML file to write; the case's name with .html if left out.")
 @_form_option("--pdf", "Write a PDF; its name, or the case's with .pdf. Without -o no HTML then.")
 @_form_option("--xlsx", "Write a spreadsheet; its name, or the case's with .xlsx. Without -o no HTML then.")
-@units_option
+@report_units_option
 @click.option("--templates", type=CASE, help="Folder of your own templates, laid over the built-in ones.")
 @on_option
 @_guarded

@@ -8,7 +8,7 @@ import struct
 import zlib
 from collections.abc import Iterator
 from dataclasses import dataclass
-from pathlib import Path
+from pathlib import Path, PurePath
 from typing import Any
 from xml.etree import ElementTree
 
@@ -23,7 +23,7 @@ LARGEST_LOGO_BYTES = 300_000
 LARGEST_SIDE = 4000  # pixels
 _SVG = "{http://www.w3.org/2000/svg}svg"
 _PNG = b"\x89PNG\r\n\x1a\n"
-_WANTED = "write the path of a PNG, JPEG or SVG file, counted from the folder of the case file"
+_WANTED = "write the path of a PNG, JPEG or SVG file in the folder of the case file or below it"
 
 
 @dataclass(frozen=True)
@@ -63,15 +63,15 @@ def logo_at(folder: Path, value: object) -> Logo:
 
     Args:
         folder: The folder that its path is counted from. [-]
-        value: What stands in the file: a path that is not absolute. [-]
+        value: What stands in the file: a path within that folder. [-]
     Raises: QuantityError if it is no such path, cannot be read, is too large, or is no picture of the three kinds.
     """
     if not isinstance(value, str):
         raise QuantityError(f"{described(value)} stands where a path is needed; {_WANTED}")
-    if not value or len(value) > 300 or any(is_hidden(character) for character in value):
+    if not value or len(value) > 200 or any(is_hidden(character) for character in value):
         raise QuantityError(f"{quoted(value)} is no path; {_WANTED}")
-    if os.path.isabs(value):
-        raise QuantityError(f"{quoted(value)} is an absolute path; {_WANTED}")
+    if os.path.isabs(value) or ".." in PurePath(value).parts:
+        raise QuantityError(f"{quoted(value)} leads out of the folder of the case file; {_WANTED}")
     content = _bytes_of(folder / value, value)
     return Logo(value, _media_type(content, value), content)
 

@@ -249,9 +249,8 @@ def _pressure(comparison: Comparison, solved: Sequence[Entry], units: UnitSystem
 
     def amount(entry: Entry) -> str:
         assert entry.duty is not None
-        by = units.text("gauge pressure", entry.duty.p_cond_Pa - base, decimals=1, signed=True)
-        label = units.label("pressure").split()[0].replace("psia", "psi")
-        return f"{by}\N{NO-BREAK SPACE}{label}{held.own(entry)}"
+        by = units.with_unit("pressure difference", entry.duty.p_cond_Pa - base, decimals=1, signed=True)
+        return f"{by}{held.own(entry)}"
 
     def ratio(entry: Entry) -> float:
         return entry.relative["p_cond"]

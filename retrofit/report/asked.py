@@ -7,7 +7,7 @@ from dataclasses import dataclass, replace
 
 from retrofit.report.gathering import basis_text, gathered, nameless, names
 from retrofit.report.judging import spelled
-from retrofit.report.values import three_digits
+from retrofit.report.values import concentration_text
 from retrofit.study import Entry
 from retrofit.study.room import Question
 from retrofit.units import UnitSystem
@@ -70,8 +70,7 @@ def _value(kind: str, value: float, units: UnitSystem) -> str:
     """Return a number with its unit; concentrations in air are the thousandth part of a usual density."""
     if kind != "density":
         return units.with_unit(kind, value)
-    label = {"si": "g/m³", "ip": "lb/1000 ft³"}[units.name]
-    return f"{three_digits(1000.0 * float(units.number('density', value)))}\N{NO-BREAK SPACE}{label}"
+    return concentration_text(value, units)
 
 
 def _question(key: tuple[str, str, str, str], numbers: list[tuple[Entry, Number]], count: int) -> Asked:

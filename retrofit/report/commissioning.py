@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from retrofit.checks.operating import discharge_limit, limit_of
 from retrofit.refrigerants import GWP_BASES, is_flammable
@@ -121,6 +121,16 @@ class Sheet:
     label: tuple[str, ...]
     when: tuple[str, ...]
     readings: tuple[tuple[str, str], ...]
+
+
+def sheets(job: Job) -> tuple[Sheet, ...]:
+    """Return a sheet of a changeover for each system of units that is shown.
+
+    Args:
+        job: The changeover.
+    """
+    first, *others = (sheet(replace(job, units=system)) for system in job.units.systems)
+    return (first, *(replace(other, key=f"{other.key}-ip") for other in others))
 
 
 def sheet(job: Job) -> Sheet:

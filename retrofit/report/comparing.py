@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable
 
+from retrofit.report.assumed import legend, marked
 from retrofit.report.plant import plant_groups
 from retrofit.report.rows import change_row, near, quantity_row
 from retrofit.report.table import Group, Notes, Row, Table, number_row, word_row
@@ -47,7 +48,15 @@ def comparison_table(comparison: Comparison, units: UnitSystem) -> Table:
     )
     caption = "Comparison on three bases: same duty, same compressor and same plant"
     _reasons(entries, notes)
-    return Table("comparison", caption, convention(comparison), columns(entries), groups, notes.listed())
+    return Table(
+        "comparison",
+        caption,
+        convention(comparison),
+        columns(entries),
+        marked(comparison, groups),
+        notes.listed(),
+        legend(comparison, groups, units),
+    )
 
 
 def columns(entries: Iterable[Entry]) -> tuple[str, ...]:

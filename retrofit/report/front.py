@@ -9,6 +9,7 @@ from dataclasses import dataclass
 from retrofit.case import Report
 from retrofit.case.values import is_hidden
 from retrofit.checks.advice import NOTHING, Advice, Chosen, Condition, Stopped, Weighed, advice, deed
+from retrofit.report.carried.made_with import group_digests
 from retrofit.report.judging import FAMILY_WORDS, reasons, source_title, spelled
 from retrofit.study import Comparison
 from retrofit.units import UnitSystem
@@ -77,6 +78,7 @@ class Front:
         options, rejected: Every option, and those that a check stops.
         signatures: Role and name of those who sign.
         revisions: Revision, day, what changed, and by whom.
+        data: Groups of data tables and the program, each with a digest that tells its version.
         outside: What the signatures do not cover.
     """
 
@@ -97,6 +99,7 @@ class Front:
     rejected: tuple[Rejection, ...]
     signatures: tuple[tuple[str, str], ...]
     revisions: tuple[tuple[str, str, str, str], ...]
+    data: tuple[tuple[str, str], ...]
     outside: str
 
 
@@ -120,7 +123,7 @@ def front(comparison: Comparison, units: UnitSystem) -> Front:
         costs=costs_line(comparison, units),
         risks=tuple((spelled(risk.text), _about(risk.about)) for risk in found.risks),
         deadlines=tuple(
-            (day_text(item.day) if item.day else "in force", spelled(item.text), _about(item.about))
+            (day_text(item.day) if item.day else "In force", spelled(item.text), _about(item.about))
             for item in found.deadlines
         ),
         no_law="" if comparison.law else "Law was not looked into: the case names no jurisdiction in [law].",
@@ -129,6 +132,7 @@ def front(comparison: Comparison, units: UnitSystem) -> Front:
         rejected=tuple(_rejection(comparison, stop) for stop in found.stopped),
         signatures=_signatures(report),
         revisions=tuple((plain(r.rev), day_text(r.date), plain(r.what), plain(r.by)) for r in report.revisions),
+        data=tuple(group_digests().items()),
         outside=OUTSIDE,
     )
 
@@ -140,7 +144,7 @@ def costs_line(comparison: Comparison, units: UnitSystem) -> str:
         comparison: An assessed result.
         units: The reader's units.
     """
-    why = "the case has no [year]" if comparison.case.year is None else "only the design point is"
+    why = "the case has no [year]" if comparison.case.year is None else "though the case has a [year]"
     return f"Not known here: a year's energy and its cost are not computed, {why}. First cost is not computed either."
 
 

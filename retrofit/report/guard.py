@@ -153,7 +153,8 @@ class _PageReader(HTMLParser):
             if name.startswith("on"):
                 self.refused.append(f"<{tag} {name}=…> would run a script")
             target = value.strip().casefold()
-            if name in LOADING_ATTRIBUTES and not target.startswith("data:image/"):
+            is_picture = (tag, name) == ("img", "src") and target.startswith("data:image/")
+            if name in LOADING_ATTRIBUTES and not is_picture:
                 self.refused.append(f"<{tag} {name}=…> would load something")
             if name == "href" and tag not in ("a", "area") and not target.startswith("#"):
                 self.refused.append(f"<{tag} href=…> would load something")

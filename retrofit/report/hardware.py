@@ -6,6 +6,7 @@ import re
 from collections.abc import Sequence
 from dataclasses import dataclass
 
+from retrofit.report.assumed import legend, marked
 from retrofit.report.judging import source_title, spelled
 from retrofit.report.table import MOST_COLUMNS, Cell, Group, Notes, Row, Table
 from retrofit.study import Comparison, Component, Entry
@@ -252,5 +253,7 @@ def _settings(comparison: Comparison, units: UnitSystem) -> Table | None:
         T = units.with_unit("temperature", first.T_K) if first.T_K is not None else "temperature not known"
         rows.append(Row(f"{first.name}: {first.held}, {T}", units.label("gauge pressure"), cells))
     names = tuple(entry.refrigerant.display_name for entry in entries)
-    group = Group("settings", "Set points, today and with each candidate", tuple(rows))
-    return Table("settings", "Set points, old to new", CARRIED, names, (group,), notes.listed())
+    groups = (Group("settings", "Set points, today and with each candidate", tuple(rows)),)
+    assumed = legend(comparison, groups, units)
+    caption = "Set points, old to new"
+    return Table("settings", caption, CARRIED, names, marked(comparison, groups), notes.listed(), assumed)

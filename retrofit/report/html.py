@@ -18,7 +18,7 @@ def render_html(
 
     Args:
         comparison: An assessed result.
-        units: "si" or "ip". [-]
+        units: "si", "ip" or "both". [-]
         template_folder: The reader's own templates, laid over those of the package; None for none. [-]
         made_at: The time to print; the same result and time give the same text. [-]
     Returns: The page. [-]

@@ -3,14 +3,14 @@
 from __future__ import annotations
 
 from collections.abc import Iterable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from retrofit.checks.operating import discharge_limit, limit_of
 from retrofit.report.judging import spelled
 from retrofit.study import Comparison, Component, Entry
 from retrofit.study.changeover import Changeover
 from retrofit.study.practice import Figure, practice
-from retrofit.units import UnitSystem, listed
+from retrofit.units import UnitSystem, listed, stacked
 
 KELVIN = 273.15
 MICRON_PA = 0.133322  # a thousandth of a millimetre of mercury
@@ -205,7 +205,7 @@ def _oil_before(job: Job) -> Made:
         f"changed while {job.old} is still in; the last change is step 5. {_oil_count(job)}",
         "A sample says when it is enough, not a count.",
     )
-    blanks = [Blank(f"Change {count}: out", OIL_UNIT[job.units.name]) for count in (1, 2, 3)]
+    blanks = [Blank(f"Change {count}: out", job.units.each(OIL_UNIT)) for count in (1, 2, 3)]
     return title, False, lines, (), (*blanks, Blank("Old oil left", "%"))
 
 
@@ -225,6 +225,10 @@ def _count(number: float) -> str:
 
 def _size(job: Job, volume_m3: float) -> str:
     """Return the size of a cylinder as it is stamped: litres, or pounds of water."""
+    return stacked(*(_size_in(replace(job, units=system), volume_m3) for system in job.units.systems))
+
+
+def _size_in(job: Job, volume_m3: float) -> str:
     if job.units.name == "si":
         return job.units.with_unit("volume", volume_m3, decimals=0)
     return f"{job.mass(volume_m3 * WATER_KG_PER_M3)} of water capacity"
@@ -235,7 +239,7 @@ def _recover(job: Job) -> Made:
     fill, T = f"{found.fill:.0%}", job.units.with_unit("temperature", found.T_K, decimals=0)
     lines = [f"Recover the whole charge into clean cylinders and weigh it. Expected: {job.mass(found.charge_kg)}."]
     if found.kg_per_m3 is not None:
-        each = f"{found.kg_per_m3 / WATER_KG_PER_M3:.2f} " + PER_VOLUME[job.units.name]
+        each = f"{found.kg_per_m3 / WATER_KG_PER_M3:.2f} " + job.units.each(PER_VOLUME)
         lines.append(f"No cylinder more than {fill} full of liquid at {T}: {each}, and never above the mass stamped.")
     sizes = [
         f"{size.count} of {_size(job, size.volume_m3)} ({job.mass(size.each_kg)} each)" for size in found.cylinders
@@ -250,7 +254,7 @@ def _recover(job: Job) -> Made:
 
 
 def _drain(job: Job) -> Made:
-    unit = OIL_UNIT[job.units.name]
+    unit = job.units.each(OIL_UNIT)
     if _oil_verdict(job) in ("keep", "adjust"):
         title = "Oil that came out"
         text = "Measure the oil that came out with the charge and at drains, and put as much of the same kind back."

@@ -12,7 +12,7 @@ from retrofit.report.judging import spelled
 from retrofit.report.values import FIELDS, potential_text
 from retrofit.study import Comparison, Entry
 from retrofit.study.law import LawBasis, LawCheck, LawRow
-from retrofit.units import UnitSystem, format_number
+from retrofit.units import UnitSystem, format_number, stacked
 
 UNKNOWN = "unknown"
 LIMIT = ", limit "  # between a number and its limit
@@ -145,7 +145,11 @@ def _gwp(basis: str, value: float | None, count: int) -> str:
 def _charge(check: LawCheck, units: UnitSystem) -> str:
     if check.charge_kg is None:
         return UNKNOWN
-    low, expected, high = (units.text("mass", value) for value in check.charge_kg)
+    return stacked(*(_masses(check.charge_kg, system) for system in units.systems))
+
+
+def _masses(charge_kg: tuple[float, float, float], units: UnitSystem) -> str:
+    low, expected, high = (units.text("mass", value) for value in charge_kg)
     return f"{expected} ({low} to {high})" if low != high else expected
 
 

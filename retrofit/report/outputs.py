@@ -37,7 +37,7 @@ def render_forms(
     Args:
         forms: Some of `FORMS`. [-]
         comparison: An assessed result.
-        units: "si" or "ip". [-]
+        units: "si", "ip" or "both"; a spreadsheet has one, then "si". [-]
         template_folder: The reader's own templates for HTML and PDF; None for none. [-]
         made_at: The time to print. [-]
     Returns: Contents of the files, by form. [-]
@@ -46,6 +46,7 @@ def render_forms(
     from retrofit.report.html import render_html
     from retrofit.report.pdf import render_pdf
     from retrofit.report.spreadsheet import render_spreadsheet
+    from retrofit.units import UNIT_SYSTEMS
 
     found: dict[str, str | bytes] = {}
     if {"html", "pdf"} & set(forms):
@@ -54,5 +55,5 @@ def render_forms(
         if "pdf" in forms:
             found["pdf"] = render_pdf(html, comparison)
     if "xlsx" in forms:
-        found["xlsx"] = render_spreadsheet(comparison, units, made_at=made_at)
+        found["xlsx"] = render_spreadsheet(comparison, UNIT_SYSTEMS[units].systems[0].name, made_at=made_at)
     return found

@@ -12,9 +12,10 @@ from retrofit import figures
 from retrofit.case import Case
 from retrofit.checks import answer, not_checked
 from retrofit.checks.changeover import chosen_for_cards
+from retrofit.report.assumed import section_legends
 from retrofit.report.banding import band_text
 from retrofit.report.cautioning import DEFERENCE, CautionGroup, caution_groups
-from retrofit.report.commissioning import Sheet, sheet
+from retrofit.report.commissioning import Sheet, sheets
 from retrofit.report.comparing import comparison_table, convention
 from retrofit.report.found import AsFound, as_found
 from retrofit.report.front import Front, front, plain
@@ -34,7 +35,11 @@ from retrofit.report.values import UsedSource, environment_table, used_sources
 from retrofit.study import Comparison, Entry
 from retrofit.units import MISSING, UnitSystem
 
-SYSTEM_WORDS = {"si": "metric units", "ip": "inch-pound units"}
+SYSTEM_WORDS = {
+    "si": "metric units",
+    "ip": "inch-pound units",
+    "both": "metric units, with inch-pound units in brackets",
+}
 
 
 @dataclass(frozen=True)
@@ -79,6 +84,7 @@ class Page:
     number: Mapping[str, str]
     where: Mapping[str, str]
     front: Front
+    assumed: Mapping[str, str]
     answer: Answered
     convention: str
     band: str
@@ -94,6 +100,7 @@ class Page:
     overlays: tuple[figures.Drawing, ...]
     charts: tuple[figures.Drawing, ...]
     enthalpy_note: str
+    axes_note: str
     hardware: Hardware
     room: RoomPart | None
     law: LawPart | None
@@ -122,7 +129,7 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
         units: The reader's units.
         made_at: The time to print.
     """
-    case = comparison.case
+    case, axes = comparison.case, units.systems[0]
     (existing, *candidates), shared = judged(comparison)
     solved = any(entry.duty is not None for entry in comparison.entries)
     main, detail = main_part(comparison), annex(comparison)
@@ -143,6 +150,7 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
         number={place.name: place.number for place in (*main, *detail)},
         where={place.name: place.words for place in (*main, *detail)},
         front=front(comparison, units),
+        assumed=section_legends(case, units),
         answer=answered(comparison, units),
         convention=convention(comparison),
         band=band_text(comparison, units),
@@ -155,15 +163,18 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
         comparison=comparison_table(comparison, units),
         plant_notes=(WHY_SAME_COOLING,) if has_plant(comparison) else (),
         environment=environment_table(comparison, units),
-        overlays=figures.overlay_charts(comparison, units),
-        charts=_charts(comparison, units) if solved else (),
-        enthalpy_note=enthalpy_note(units),
+        overlays=figures.overlay_charts(comparison, axes),
+        charts=_charts(comparison, axes) if solved else (),
+        enthalpy_note=enthalpy_note(axes),
+        axes_note=""
+        if axes is units
+        else f"The charts and the state points are in {SYSTEM_WORDS[axes.name]}; the tables carry both.",
         hardware=hardware(comparison, units),
         room=room_part(comparison, units),
         law=law_part(comparison, units),
         method=method(comparison, chosen, changes, units),
-        commissioning=tuple(sheet(job) for job in changes),
-        portraits=portraits(comparison, units),
+        commissioning=tuple(found for job in changes for found in sheets(job)),
+        portraits=portraits(comparison, axes),
         inputs=inputs(case, units),
         defaults=defaults(case, units),
         missing=missing(case),

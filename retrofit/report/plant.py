@@ -8,7 +8,7 @@ from retrofit.report.rows import change_row, change_text, near, quantity_row
 from retrofit.report.table import Cell, Group, Notes, Row
 from retrofit.study import Comparison, Entry
 from retrofit.study.bands import pair_band
-from retrofit.units import MISSING, UnitSystem
+from retrofit.units import MISSING, UnitSystem, stacked
 
 HELD = "existing compressor and exchangers, same air, water or brine; pressures float"
 # Why a COP is compared at the same cooling, where the two stand side by side.
@@ -202,5 +202,10 @@ def unmet_text(entry: Entry, today: Entry, units: UnitSystem, nothing: str) -> s
     lacks, needed = entry.plant.operation.unmet_W, entry.plant.operation.cooling_needed_W
     if lacks <= 0.0:
         return nothing
-    text = units.text("cooling", lacks, decimals=units.displays["cooling"].decimals_for([needed]))
+    text = stacked(
+        *(
+            system.text("cooling", lacks, decimals=system.displays["cooling"].decimals_for([needed]))
+            for system in units.systems
+        )
+    )
     return near(text) if lacks <= pair_band(today, entry, "capacity") * needed else text

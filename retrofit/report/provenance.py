@@ -8,7 +8,7 @@ from dataclasses import dataclass
 from retrofit.refrigerants import GWP_BASES, Value, source
 from retrofit.report.gathering import basis_text, gathered, names
 from retrofit.report.table import NOT_STATED
-from retrofit.report.values import FIELDS, potential_text, three_digits
+from retrofit.report.values import FIELDS, concentration_text, potential_text
 from retrofit.study import Comparison, Entry
 from retrofit.units import UnitSystem
 
@@ -109,8 +109,7 @@ def _show(field: str, units: UnitSystem) -> Callable[[Value], str]:
 
 def _number(field: str, number: float, units: UnitSystem) -> str:
     if field in CONCENTRATIONS:
-        label = {"si": "g/m³", "ip": "lb/1000 ft³"}[units.name]
-        return f"{three_digits(1000.0 * float(units.number('density', number)))}\N{NO-BREAK SPACE}{label}"
+        return concentration_text(number, units)
     if field in TEMPERATURES:
         return units.with_unit("temperature", number, decimals=1)
     if field == "molar_mass_kg_per_mol":

@@ -11,7 +11,7 @@ from retrofit.report.classes import ClassBlock, Step, class_blocks, steps
 from retrofit.report.gathering import basis_text, gathered, nameless, names
 from retrofit.study import Comparison, Entry
 from retrofit.study.room import UNKNOWN, RoomCheck, WorkedLimit
-from retrofit.units import UnitSystem
+from retrofit.units import UnitSystem, stacked
 
 NOT_GIVEN = "not given"
 ROLES = {
@@ -167,14 +167,19 @@ def mass_text(value: float | None, units: UnitSystem) -> str:
     return units.text("mass", value, missing=UNKNOWN)
 
 
-def _line(entry: Entry, check: RoomCheck, units: UnitSystem) -> RoomLine:
-    low, high, limit = check.lowest_kg, check.highest_kg, check.deciding
+def _span(check: RoomCheck, units: UnitSystem) -> str:
+    low, high = check.lowest_kg, check.highest_kg
     spread = low is not None and high is not None and low < high
+    return f"{mass_text(low, units)} to {mass_text(high, units)}" if spread else mass_text(high, units)
+
+
+def _line(entry: Entry, check: RoomCheck, units: UnitSystem) -> RoomLine:
+    limit = check.deciding
     return RoomLine(
         entry.refrigerant.display_name,
         entry.refrigerant.safety_class.text or "not stated",
         mass_text(check.expected_kg, units),
-        f"{mass_text(low, units)} to {mass_text(high, units)}" if spread else mass_text(high, units),
+        stacked(*(_span(check, system) for system in units.systems)),
         mass_text(limit.limit_kg if limit else None, units),
         units.text("mass", check.margin_kg, signed=True, missing=UNKNOWN),
         check.verdict,

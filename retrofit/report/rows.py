@@ -5,7 +5,7 @@ from __future__ import annotations
 from retrofit.report.table import Row, number_row
 from retrofit.study import Comparison
 from retrofit.study.bands import pair_band
-from retrofit.units import MISSING, UnitSystem, format_number
+from retrofit.units import MISSING, UnitSystem, format_number, stacked
 
 PERCENT = "%"
 
@@ -28,8 +28,8 @@ def quantity_row(label: str, kind: str, values: list[float | None], units: UnitS
 def _four_digits(kind: str, value: float | None, units: UnitSystem) -> str:
     if value is None:
         return MISSING
-    number = float(f"{float(units.number(kind, value)):.4g}")
-    return format_number(number, 0 if abs(number) >= 1000.0 else 1)
+    numbers = [float(f"{float(system.number(kind, value)):.4g}") for system in units.systems]
+    return stacked(*(format_number(number, 0 if abs(number) >= 1000.0 else 1) for number in numbers))
 
 
 def change_row(label: str, comparison: Comparison, ratio: str, band: str) -> Row:

@@ -21,7 +21,10 @@ class Cell:
 
 @dataclass(frozen=True)
 class Row:
-    """One quantity with its unit, and a cell for each refrigerant; of numbers also their kind and the values in SI."""
+    """One quantity with its unit, and a cell for each refrigerant; of numbers also their kind and the values in SI.
+
+    `sign` is that of what rests on an assumed value.
+    """
 
     label: str
     unit: str
@@ -29,6 +32,7 @@ class Row:
     kind: str = ""
     values: tuple[float | None, ...] = ()
     bands: tuple[float, ...] = ()
+    sign: str = ""
 
 
 @dataclass(frozen=True)
@@ -51,7 +55,10 @@ class Note:
 
 @dataclass(frozen=True)
 class Table:
-    """A table; with up to seven refrigerants they are its columns, with more they are its rows."""
+    """A table; with up to seven refrigerants they are its columns, with more they are its rows.
+
+    `assumed` says what its sign stands for; empty if no row carries it.
+    """
 
     name: str
     caption: str
@@ -59,6 +66,7 @@ class Table:
     columns: tuple[str, ...]
     groups: tuple[Group, ...]
     notes: tuple[Note, ...]
+    assumed: str = ""
 
     @property
     def is_wide(self) -> bool:

@@ -8,7 +8,7 @@ from dataclasses import dataclass
 from retrofit.refrigerants import GWP_BASES, Refrigerant, Source, Value, source
 from retrofit.report.table import NOT_STATED, Cell, Group, Notes, Row, Table
 from retrofit.study import Comparison, Entry
-from retrofit.units import UnitSystem, format_number
+from retrofit.units import UnitSystem, format_number, stacked
 
 FIELDS = {
     "composition_mass_pct": "composition",
@@ -44,10 +44,10 @@ def environment_table(comparison: Comparison, units: UnitSystem) -> Table:
     Returns: The table; a value not known reads "not stated".
     """
     notes, entries = Notes(), comparison.entries
-    density = {"si": "g/m³", "ip": "lb/1000 ft³"}[units.name]  # the thousandth part of the usual unit of density
+    density = concentration_unit(units)
 
     def mass_per_volume(number: object) -> str:
-        return three_digits(1000.0 * float(units.number("density", float(number))))  # type: ignore[arg-type]
+        return concentration(float(number), units)  # type: ignore[arg-type]
 
     limits = (
         value_row("Safety class", "", entries, "safety_class", notes, str),
@@ -67,6 +67,35 @@ def environment_table(comparison: Comparison, units: UnitSystem) -> Table:
     )
     names = tuple(entry.refrigerant.display_name for entry in entries)
     return Table("environment", "Safety and environment", BELONGS, names, groups, notes.listed())
+
+
+def concentration(value: float, units: UnitSystem) -> str:
+    """Return a concentration in air as a number, up to three digits.
+
+    Args:
+        value: The concentration. [kg/m3]
+        units: The reader's units.
+    """
+    numbers = (1000.0 * float(system.number("density", value)) for system in units.systems)
+    return stacked(*map(three_digits, numbers))
+
+
+def concentration_unit(units: UnitSystem) -> str:
+    """Return the unit of `concentration`: the thousandth part of a usual one of density."""
+    return units.each({"si": "g/m³", "ip": "lb/1000 ft³"})
+
+
+def concentration_text(value: float, units: UnitSystem) -> str:
+    """Return a concentration in air with its unit.
+
+    Args:
+        value: The concentration. [kg/m3]
+        units: The reader's units.
+    """
+    parts = [
+        f"{concentration(value, system)}\N{NO-BREAK SPACE}{concentration_unit(system)}" for system in units.systems
+    ]
+    return stacked(*parts).replace("\n", " ")
 
 
 def gwp_rows(entries: Sequence[Entry], bases: Iterable[str], notes: Notes) -> tuple[Row, ...]:

@@ -14,6 +14,7 @@ it is a point on a scale. A pressure always says whether it is absolute (a) or g
 from retrofit.units.air import STANDARD_ATMOSPHERE_PA, standard_atmosphere_Pa
 from retrofit.units.reading import Pressure, parse_pressure, parse_quantity
 from retrofit.units.showing import (
+    BOTH,
     IP,
     MINUS,
     MISSING,
@@ -23,11 +24,13 @@ from retrofit.units.showing import (
     Display,
     UnitSystem,
     format_number,
+    stacked,
 )
 from retrofit.units.table import KINDS, Kind, Unit
 from retrofit.units.words import close_to, described, listed, quoted, shown
 
 __all__ = [
+    "BOTH",
     "IP",
     "KINDS",
     "MINUS",
@@ -49,5 +52,6 @@ __all__ = [
     "parse_quantity",
     "quoted",
     "shown",
+    "stacked",
     "standard_atmosphere_Pa",
 ]

@@ -66,6 +66,19 @@ class UnitSystem:
     name: str
     displays: Mapping[str, Display]
 
+    @property
+    def systems(self) -> tuple[UnitSystem, ...]:
+        """The systems of which numbers are shown; the axes of a chart are in the first."""
+        return (self,)
+
+    def each(self, words: Mapping[str, str]) -> str:
+        """Return what a word is in each system that is shown.
+
+        Args:
+            words: The word by the name of the system, "si" and "ip". [-]
+        """
+        return stacked(*(words[system.name] for system in self.systems))
+
     def label(self, kind: str) -> str:
         """Return the unit as a table heading or an axis writes it; empty for a ratio."""
         return self.displays[kind].label
@@ -117,6 +130,65 @@ class UnitSystem:
         """Return an absolute pressure [Pa] as a gauge shows it in air of `p_ambient_Pa` [Pa]."""
         p_gauge_Pa = None if p_Pa is None else p_Pa - p_ambient_Pa
         return self.text("gauge pressure", p_gauge_Pa, decimals=decimals)
+
+
+@dataclass(frozen=True)
+class TwoSystems(UnitSystem):
+    """Two systems at once: the second in brackets wherever it differs, on a line of its own in a table."""
+
+    first: UnitSystem
+    second: UnitSystem
+
+    @property
+    def systems(self) -> tuple[UnitSystem, ...]:
+        """Both systems."""
+        return (self.first, self.second)
+
+    def label(self, kind: str) -> str:
+        """Return both units, the second below the first, or the one that they share."""
+        return stacked(self.first.label(kind), self.second.label(kind))
+
+    def text(
+        self,
+        kind: str,
+        value: float | None,
+        *,
+        decimals: int | None = None,
+        signed: bool = False,
+        missing: str = MISSING,
+    ) -> str:
+        """Return both numbers, the second below the first; arguments as for `UnitSystem.text`."""
+        first = self.first.text(kind, value, decimals=decimals, signed=signed, missing=missing)
+        if self._is_shared(kind):
+            return first
+        return stacked(first, self.second.text(kind, value, decimals=decimals, signed=signed, missing=missing))
+
+    def column(self, kind: str, values: Iterable[float | None], *, missing: str = MISSING) -> list[str]:
+        """Return both numbers of each value; arguments as for `UnitSystem.column`."""
+        kept = list(values)
+        first = self.first.column(kind, kept, missing=missing)
+        if self._is_shared(kind):
+            return first
+        return list(map(stacked, first, self.second.column(kind, kept, missing=missing)))
+
+    def with_unit(self, kind: str, value: float | None, *, decimals: int | None = None, signed: bool = False) -> str:
+        """Return both quantities with their units, the second in brackets."""
+        first = self.first.with_unit(kind, value, decimals=decimals, signed=signed)
+        second = self.second.with_unit(kind, value, decimals=decimals, signed=signed)
+        return first if self._is_shared(kind) or first == second else f"{first} ({second})"
+
+    def _is_shared(self, kind: str) -> bool:
+        return self.displays[kind].unit == self.second.displays[kind].unit
+
+
+def stacked(first: str, second: str = "") -> str:
+    """Return two texts one above the other, the second in brackets; one of them if there is no other.
+
+    Args:
+        first: The upper one. [-]
+        second: The lower one. [-]
+    """
+    return first if second in ("", first) else f"{first}\n({second})"
 
 
 def format_number(number: float, decimals: int, *, signed: bool = False) -> str:
@@ -211,4 +283,5 @@ IP = UnitSystem(
     },
 )
 
-UNIT_SYSTEMS: Mapping[str, UnitSystem] = {"si": SI, "ip": IP}
+BOTH = TwoSystems("both", SI.displays, SI, IP)
+UNIT_SYSTEMS: Mapping[str, UnitSystem] = {"si": SI, "ip": IP, "both": BOTH}

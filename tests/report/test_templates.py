@@ -121,6 +121,8 @@ def test_an_obvious_way_to_hide_the_cautions_by_style_is_refused(rule, render):
 LOADING = {
     "script": "<script>document.body.remove()</script>",
     "handler": '<p onclick="x()">a</p>',
+    "drawing in a frame": '<iframe src="data:image/svg+xml;base64,AAAA"></iframe>',
+    "second picture": '<img src="data:image/png;base64,AAAA" srcset="data:image/png;base64,AAAA 1x, //a.example 2x">',
     "picture": '<img src="https://example.org/logo.png">',
     "style sheet": '<link rel="stylesheet" href="https://example.org/a.css">',
     "frame": '<iframe src="https://example.org"></iframe>',

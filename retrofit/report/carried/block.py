@@ -78,6 +78,8 @@ def _files(comparison: Comparison) -> dict[str, bytes]:
     case, found = comparison.case, {}
     if case.year and case.year.weather and case.weather:
         found[PurePosixPath(case.year.weather).as_posix()] = case.weather.text.encode("utf-8")
+    if case.report and case.report.logo:
+        found[PurePosixPath(case.report.logo.path).as_posix()] = case.report.logo.content
     if comparison.law and any(table.is_own for table in comparison.law.tables):
         found |= {f"{FOLDER}/{path.name}": path.read_bytes() for path in own_files(case.path)}
     return found

@@ -47,5 +47,14 @@ def group_of(place: str) -> str:
     return next(words for start, words in GROUPS if place.startswith(start))
 
 
+@cache
+def group_digests() -> Mapping[str, str]:
+    """Return a short digest of each group of data tables and of the program, by what it is in words."""
+    groups: dict[str, list[str]] = {}
+    for place, digest in data_digests().items():
+        groups.setdefault(group_of(place), []).append(f"{place} {digest}")
+    return {words: hashlib.sha256("\n".join(parts).encode()).hexdigest()[:8] for words, parts in groups.items()}
+
+
 def _place(path: Path) -> str:
     return path.relative_to(PACKAGE).as_posix()

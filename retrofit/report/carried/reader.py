@@ -20,7 +20,7 @@ from retrofit.case.values import is_hidden
 from retrofit.errors import ReportError
 from retrofit.report.carried.block import END, FORMAT, PARTS, START, page_digest
 from retrofit.report.carried.result import digest
-from retrofit.units import shown
+from retrofit.units import UNIT_SYSTEMS, shown
 
 LARGEST_REPORT_BYTES = 100_000_000
 LARGEST_RESULT_BYTES = 100_000_000
@@ -165,7 +165,7 @@ def _carried(name: str, data: dict[str, Any], page: str) -> Carried:
         _damaged(name, str(error))
     if len(block.case.text.encode("utf-8")) > LARGEST_FILE_BYTES or len(files) > MOST_FILES:
         _refuse(name, f"its case is larger than 1 MB, or has more than {MOST_FILES} files; no case is; {AGAIN}")
-    if block.options.units not in ("si", "ip"):
+    if block.options.units not in UNIT_SYSTEMS:
         _damaged(name, f"there are no units {shown(block.options.units)}")
     digests |= {"page": page, "result": digest(result)}
     return Carried(
