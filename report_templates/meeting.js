@@ -5,10 +5,13 @@
   const said = document.getElementById("said"), aside = document.getElementById("aside");
   const board = () => document.getElementById("board");
   const fields = (root) => root.querySelectorAll("input:not([type=hidden]), textarea, select");
-  let shown = +board().dataset.version, asking = null, timer = 0, quiet = 0, waiting = null, sent = new Map();
+  let shown = +board().dataset.version, under = 0, typed = null, timer = 0, quiet = 0, waiting = null, sent = new Map();
 
   const isDirty = (field) => field.tagName === "SELECT"
     ? [...field.options].some((option) => option.selected !== option.defaultSelected) : field.value !== field.defaultValue;
+
+  // What is shown as under way is always asked for again, whatever its version.
+  const news = () => ask(`/news?seen=${board().dataset.working ? 0 : shown}`);
 
   function say(text) {
     said.textContent = text;
@@ -17,26 +20,28 @@
   }
 
   async function ask(url, options) {
-    const mine = asking = new AbortController();
+    under += 1;
     try {
-      const answer = await fetch(url, { ...options, signal: mine.signal, headers: { "X-Part": "1" } });
+      const answer = await fetch(url, { ...options, headers: { "X-Part": "1" } });
       if (answer.status === 204) return;
       const text = await answer.text();
-      if (!answer.ok) say(text);
-      else if (mine === asking) put(text);
+      if (answer.ok) put(text);
+      else say(text);
     } catch (error) {
       if (error.name !== "AbortError") say("No answer: the meeting has ended on this machine. What is shown is the last answer.");
     } finally {
-      if (mine === asking) asking = null;
+      under -= 1;
     }
   }
 
+  // Only what was typed is overtaken: the next form carries it again. A button's request is never taken back.
   function post(form, button) {
     clearTimeout(timer);
     waiting = null;
-    asking?.abort();
+    if (typed && typed.form === form) typed.control.abort();
+    typed = button ? null : { form, control: new AbortController() };
     sent = new Map([...fields(form)].map((field) => [field.id, field.value]));
-    ask(form.action, { method: "POST", body: new URLSearchParams(new FormData(form, button)) });
+    ask(form.action, { method: "POST", body: new URLSearchParams(new FormData(form, button)), signal: typed?.control.signal });
   }
 
   function later(form) {
@@ -63,7 +68,7 @@
     scrollTo(x, y);
     restore(fresh, focus);
     say(fresh.dataset.said);
-    if (fresh.dataset.working) setTimeout(() => asking || ask(`/news?seen=${shown}`), SOON);
+    if (fresh.dataset.working) setTimeout(() => under || news(), SOON);
     if (again) later(again);
   }
 
@@ -143,7 +148,7 @@
     tell(href).catch(() => { location.href = href; });
   });
   setInterval(() => {
-    if (!asking && !waiting && !document.hidden && !aside.open) ask(`/news?seen=${shown}`);
+    if (!under && !waiting && !document.hidden && !aside.open) news();
   }, NEWS);
-  if (board().dataset.working) setTimeout(() => ask(`/news?seen=${shown}`), SOON);
+  if (board().dataset.working) setTimeout(news, SOON);
 })();

@@ -1,8 +1,9 @@
 """What every test shares: a store of tables of this session's own, so that each refrigerant is built once,
-and cases without files."""
+cases without files, and one browser."""
 
 import datetime
 import os
+from pathlib import Path
 
 import pytest
 
@@ -10,6 +11,11 @@ from retrofit.case import Case
 from retrofit.case.model import CaseFile
 
 STORE = "RETROFIT_STORE"
+CHROMIUM = Path("/usr/bin/chromium")
+FLAGS = [
+    "--no-sandbox", "--disable-gpu", "--disable-quic", "--no-first-run", "--disable-background-networking",
+    "--disable-component-update", "--disable-sync",
+]  # fmt: skip
 
 
 @pytest.fixture(scope="session", autouse=True)
@@ -73,3 +79,18 @@ def _case_with(existing="R404A", candidates=("R448A",), **tables):
     read = CaseFile.model_validate(kept, context={"p_ambient_Pa": 101_325.0})
     parts = {name: getattr(read, name) for name in CaseFile.model_fields if name not in ("title", "about")}
     return Case(title="A plant", about=None, **parts, path="plant.toml", text="", given={}, defaults=())
+
+
+@pytest.fixture(scope="session")
+def browser():
+    """Yield a Chromium; skip without one unless RETROFIT_REQUIRE_BROWSER=1 says that it has to be there."""
+    required = os.environ.get("RETROFIT_REQUIRE_BROWSER") == "1"
+    if not CHROMIUM.exists() and not required:
+        pytest.skip(f"no Chromium at {CHROMIUM}")
+    sync_api = (
+        pytest.importorskip("playwright.sync_api") if not required else __import__("playwright.sync_api").sync_api
+    )
+    with sync_api.sync_playwright() as playwright:
+        chromium = playwright.chromium.launch(executable_path=str(CHROMIUM), args=FLAGS)
+        yield chromium
+        chromium.close()

@@ -1,6 +1,5 @@
 """What the tests of the report share: assessed results of the shipped cases, their pages, and a reader of pages."""
 
-import os
 from dataclasses import dataclass, field
 from datetime import UTC, datetime
 from functools import cache
@@ -18,11 +17,6 @@ ROOT = Path(__file__).resolve().parents[2]
 CASES = sorted(path.stem for path in (ROOT / "cases").glob("*.toml"))
 MADE_AT = datetime(2026, 12, 1, 9, 30, tzinfo=UTC)
 VOID = frozenset("area base br col embed hr img input link meta source track wbr".split())
-CHROMIUM = Path("/usr/bin/chromium")
-FLAGS = [
-    "--no-sandbox", "--disable-gpu", "--disable-quic", "--no-first-run", "--disable-background-networking",
-    "--disable-component-update", "--disable-sync",
-]  # fmt: skip
 
 
 def pytest_generate_tests(metafunc):
@@ -139,18 +133,3 @@ class _Reader(HTMLParser):
             if piece is not None and "sup" not in names:
                 gap = " " if self.open[-1][1].get("class") == "unit" else ""
                 self.pieces[kind] = piece + gap + data
-
-
-@pytest.fixture(scope="session")
-def browser():
-    """Yield a Chromium; skip without one unless RETROFIT_REQUIRE_BROWSER=1 says that it has to be there."""
-    required = os.environ.get("RETROFIT_REQUIRE_BROWSER") == "1"
-    if not CHROMIUM.exists() and not required:
-        pytest.skip(f"no Chromium at {CHROMIUM}")
-    sync_api = (
-        pytest.importorskip("playwright.sync_api") if not required else __import__("playwright.sync_api").sync_api
-    )
-    with sync_api.sync_playwright() as playwright:
-        chromium = playwright.chromium.launch(executable_path=str(CHROMIUM), args=FLAGS)
-        yield chromium
-        chromium.close()
