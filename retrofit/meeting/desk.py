@@ -7,7 +7,7 @@ import threading
 import time
 from collections import OrderedDict
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from typing import Any
 
 from retrofit.case import Case, as_text, case_from_data, laid_over
@@ -35,6 +35,7 @@ class Source:
     case: Case
     data: Mapping[str, Any]
     on: datetime.date | None = None
+    _read: dict[Physics, Case] = field(default_factory=dict, repr=False, compare=False)
 
     def text_of(self, key: str) -> str:
         """Return what the file says under a full key, as it would be written again; empty if nothing.
@@ -49,8 +50,13 @@ class Source:
 
     def case_with(self, physics: Physics) -> Case:
         """Return the case with changes laid over it; raises CaseFileError if they do not fit."""
-        changes, added = physics
-        return case_from_data(laid_over(self.data, dict(changes), added), self.case.path, self.case.text)
+        found = self._read.get(physics)
+        if found is None:
+            changes, added = physics
+            found = case_from_data(laid_over(self.data, dict(changes), added), self.case.path, self.case.text)
+            self._read.clear()  # the last one is asked for twice: when it is changed, and when it is worked out
+            self._read[physics] = found
+        return found
 
 
 @dataclass(frozen=True)
