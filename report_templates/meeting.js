@@ -10,8 +10,9 @@
   const isDirty = (field) => field.tagName === "SELECT"
     ? [...field.options].some((option) => option.selected !== option.defaultSelected) : field.value !== field.defaultValue;
 
-  // What is shown as under way is always asked for again, whatever its version.
-  const news = () => ask(`/news?seen=${board().dataset.working ? 0 : shown}`);
+  // What is under way or follows is always asked for again, whatever its version.
+  const isOpen = () => board().dataset.working || board().dataset.follows;
+  const news = () => ask(`/news?seen=${isOpen() ? 0 : shown}`);
 
   function say(text) {
     said.textContent = text;
@@ -68,7 +69,7 @@
     scrollTo(x, y);
     restore(fresh, focus);
     say(fresh.dataset.said);
-    if (fresh.dataset.working) setTimeout(() => under || news(), SOON);
+    if (isOpen()) setTimeout(() => under || news(), SOON);
     if (again) later(again);
   }
 
@@ -97,10 +98,11 @@
   }
 
   function markMoved(old, fresh) {
-    const before = new Map([...old.querySelectorAll("td a.how, dd a.how")].map((cell) => [cell.getAttribute("href"), cell.textContent]));
+    const isSame = +fresh.dataset.version === shown;
+    const before = new Map([...old.querySelectorAll("td a.how, dd a.how")].map((cell) => [cell.getAttribute("href"), cell]));
     for (const cell of fresh.querySelectorAll("td a.how, dd a.how")) {
-      const text = before.get(cell.getAttribute("href"));
-      cell.classList.toggle("moved", text !== undefined && text !== cell.textContent);
+      const was = before.get(cell.getAttribute("href"));
+      cell.classList.toggle("moved", !!was && (was.textContent !== cell.textContent || (isSame && was.classList.contains("moved"))));
     }
   }
 
@@ -150,5 +152,5 @@
   setInterval(() => {
     if (!under && !waiting && !document.hidden && !aside.open) news();
   }, NEWS);
-  if (board().dataset.working) setTimeout(news, SOON);
+  if (isOpen()) setTimeout(news, SOON);
 })();

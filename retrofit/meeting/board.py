@@ -95,6 +95,7 @@ class Board:
     number: Mapping[str, str]
     sections: tuple[tuple[str, str], ...]
     working: str
+    follows: bool
     problem: str
     undo: str
     redo: str
@@ -173,6 +174,7 @@ def build_board(moment: Moment, source: Source, pictures: Pictures) -> Board:
         number={name: str(place) for place, name in enumerate(SECTIONS, start=1)},
         sections=tuple(SECTIONS.items()),
         working=outcome.working,
+        follows=outcome.is_current and not outcome.is_whole,
         problem=outcome.problem,
         undo=moment.undo,
         redo=moment.redo,

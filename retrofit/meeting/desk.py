@@ -3,11 +3,12 @@
 from __future__ import annotations
 
 import datetime
+import logging
 import threading
 import time
 from collections import OrderedDict
 from collections.abc import Mapping
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from typing import Any
 
 from retrofit.case import Case, as_text, case_from_data, laid_over
@@ -17,6 +18,7 @@ from retrofit.meeting.state import State
 from retrofit.study import Comparison, compare
 
 MOST_RESULTS = 40
+PAUSE_S = 0.3  # before what is not asked for at once is begun
 PATIENCE_S = 0.8  # what takes longer is shown as under way
 
 Physics = tuple[tuple[tuple[str, str], ...], tuple[str, ...]]
@@ -67,6 +69,7 @@ class Outcome:
         comparison: Its result, or the last good one while it is not there.
         is_current: Whether the result is that of the state.
         working: What is being done, in words, while it is not ready.
+        is_whole: Whether the remaining life of its options is in it, or never will be; if not, it follows.
         problem: Why there is no result of this state, in words.
     """
 
@@ -74,6 +77,7 @@ class Outcome:
     is_current: bool
     working: str = ""
     problem: str = ""
+    is_whole: bool = True
 
 
 class Desk:
@@ -83,11 +87,13 @@ class Desk:
         self.source = source
         self._door = threading.Condition()
         self._results: OrderedDict[Physics, Comparison | str] = OrderedDict()
+        self._partial: set[Physics] = set()
         self._wanted: Physics | None = None
         self._doing = ""
         self._since = 0.0
         self._last: Comparison = assess(compare(source.case), source.on)
         self._keep(State().physics, self._last)
+        self._partial = {State().physics} if _has_life(source.case) else set()
         threading.Thread(target=self._work, name="results", daemon=True).start()
 
     @property
@@ -121,20 +127,37 @@ class Desk:
         if isinstance(found, str):
             return Outcome(self._last, False, problem=found)
         self._last = found
-        return Outcome(found, True)
+        return Outcome(found, True, is_whole=key not in self._partial)
 
     def _work(self) -> None:
         while True:
             with self._door:
-                while self._wanted is None:
+                while self._wanted is None and not self._partial:
                     self._door.wait()
+                if self._wanted is None:
+                    self._door.wait(PAUSE_S)  # what follows lets the next change go first
                 key, self._since, self._doing = self._wanted, time.monotonic(), ""
+            if key is None:
+                self._follow()
+                continue
             found = self._made(key)
             with self._door:
                 self._keep(key, found)
+                self._partial = {key} if isinstance(found, Comparison) and _has_life(found.case) else set()
                 if self._wanted == key:
                     self._wanted = None
                 self._door.notify_all()
+
+    def _follow(self) -> None:
+        """Add the remaining life to the last result, like hours of its year taken together."""
+        with self._door:
+            key = next(iter(self._partial), None)
+            found = self._results.get(key) if key is not None else None
+        whole = _with_life(found) if isinstance(found, Comparison) else None
+        with self._door:
+            self._partial.discard(key)
+            if key is not None and whole is not None and key in self._results:
+                self._results[key] = whole
 
     def _made(self, key: Physics) -> Comparison | str:
         """Return the result, or why there is none: a fault of ours must not end the thread."""
@@ -152,3 +175,21 @@ class Desk:
         self._results[key] = found
         while len(self._results) > MOST_RESULTS:
             self._results.popitem(last=False)
+
+
+def _has_life(case: Case) -> bool:
+    """Say whether there is something to tell of the years that remain."""
+    return any(table is not None for table in (case.year, case.emissions, case.money))
+
+
+def _with_life(found: Comparison) -> Comparison | None:
+    """Return a result with the remaining life of its options; nothing if that cannot be worked out."""
+    from retrofit.study.life import life_of
+
+    try:
+        return replace(found, life=life_of(found, draws=0, hourly=False))
+    except RetrofitError:
+        return None
+    except Exception:
+        logging.getLogger(__name__).exception("the remaining life could not be worked out")
+        return None

@@ -107,3 +107,40 @@ def test_a_case_that_cannot_be_read_begins_no_meeting(tmp_path):
     path.write_text("title = 3\n", encoding="utf-8")
     with pytest.raises(CaseFileError, match="plant"):
         session_of(path)
+
+
+def test_the_remaining_life_follows_the_first_answer(desk):
+    """The answer does not wait for the year; the year comes into the same result, and the numbers stay."""
+    import time
+
+    first = desk.outcome(warmer(45), 30.0)
+    until = time.monotonic() + 30.0
+    while not (last := desk.outcome(warmer(45))).is_whole and time.monotonic() < until:
+        time.sleep(0.02)
+
+    assert first.comparison.life is None
+    assert not first.is_whole
+    assert set(last.comparison.life.years) >= {"R404A", "R448A"}
+    assert [entry.duty for entry in last.comparison.entries] == [entry.duty for entry in first.comparison.entries]
+
+
+def test_a_tariff_changes_money_and_no_temperature(client):
+    """Tariff, grid factor, leak rate and life are inputs where the case has their tables; money and warming follow."""
+    import time
+
+    def life():
+        while not (moment := client.session.moment()).outcome.is_whole:
+            time.sleep(0.02)
+        return moment.outcome.comparison.life
+
+    before = life().accounts.options["R448A"]
+    client.change(
+        **{
+            "in.money.tariff": "0.36", "in.emissions.grid_factor": "0.7 kg/kWh", "in.law.remaining_life": "12 years",
+            "in.emissions.leak_rate_after": "30 %",
+        }
+    )  # fmt: skip
+    after = life().accounts.options["R448A"]
+
+    assert float(after.yearly_cost.total) > float(before.yearly_cost.total)
+    assert float(after.tewi.total_kg) > float(before.tewi.total_kg)
