@@ -58,6 +58,7 @@
     if (!fresh || +fresh.dataset.version < shown) return;
     const old = board(), focus = mark(document.activeElement), again = carry(old, fresh);
     carryPictures(old, fresh);
+    for (const box of old.querySelectorAll("details[id]")) fresh.querySelector(`#${box.id}`).open = box.open;
     markMoved(old, fresh);
     const scrolled = [...old.querySelectorAll(".scroll, .inputs")].map((box) => [box.scrollLeft, box.scrollTop]);
     const [x, y] = [scrollX, scrollY];
@@ -112,7 +113,7 @@
     const id = element.id ? `#${CSS.escape(element.id)}` : "", name = element.dataset.focus;
     const href = element.getAttribute("href");
     const path = id || (name ? `[data-focus="${name}"]` : element.value ? `button[value="${CSS.escape(element.value)}"]` : href ? `a[href="${CSS.escape(href)}"]` : "");
-    const near = element.closest("section, form[id]");
+    const near = element.closest("section, details");
     return { path, range, near: near ? near.id : "" };
   }
 
@@ -142,6 +143,7 @@
     if (form?.hasAttribute("data-live")) later(form);
   });
   document.addEventListener("click", (event) => {
+    if (event.target.closest("a[href='#inputs']")) document.getElementById("inputs").open = true;
     const link = event.target.closest("a.how");
     if (!link || event.ctrlKey || event.metaKey || event.shiftKey || event.button) return;
     const href = link.getAttribute("href");
@@ -152,5 +154,7 @@
   setInterval(() => {
     if (!under && !waiting && !document.hidden && !aside.open) news();
   }, NEWS);
+  const margin = document.getElementById("inputs");
+  if (margin && matchMedia("(max-width: 44rem)").matches) margin.open = false;
   if (isOpen()) setTimeout(news, SOON);
 })();

@@ -359,8 +359,8 @@ def meeting(case_file: Path, units: str, on: datetime | None, port: int, no_brow
     from retrofit.meeting import session_of
     from retrofit.meeting.server import serve
 
-    session = session_of(case_file, units, on.date() if on else None)
-    serve(session, port, not no_browser, lambda text: click.echo(text, err=True))
+    session = session_of(case_file, units, on.date() if on else None, _say_build)
+    serve(session, port, not no_browser, click.echo)
 
 
 @main.command()

@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import datetime
 import os
+from collections.abc import Callable
 
 from retrofit.case import read_case
 from retrofit.case.source import parsed
@@ -15,17 +16,23 @@ from retrofit.meeting.desk import Source
 from retrofit.meeting.session import Session
 
 
-def session_of(path: str | os.PathLike[str], units: str = "si", on: datetime.date | None = None) -> Session:
+def session_of(
+    path: str | os.PathLike[str],
+    units: str = "si",
+    on: datetime.date | None = None,
+    on_build: Callable[[str], None] | None = None,
+) -> Session:
     """Return a meeting on a case file.
 
     Args:
         path: The case file. [-]
         units: "si" or "ip", to begin with. [-]
         on: The day to read the tables of law for; None for today.
+        on_build: Called with a designation before its tables are built for the first page.
     Raises: CaseFileError with every problem of the file.
     """
     case = read_case(path)
-    return Session(Source(case, parsed(case.text, case.path)[0], on), units)
+    return Session(Source(case, parsed(case.text, case.path)[0], on), units, on_build)
 
 
 __all__ = ["Session", "Source", "session_of"]

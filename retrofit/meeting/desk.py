@@ -7,7 +7,7 @@ import logging
 import threading
 import time
 from collections import OrderedDict
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass, field, replace
 from typing import Any
 
@@ -83,7 +83,7 @@ class Outcome:
 class Desk:
     """Makes results in one thread of its own; any thread may ask."""
 
-    def __init__(self, source: Source) -> None:
+    def __init__(self, source: Source, on_build: Callable[[str], None] | None = None) -> None:
         self.source = source
         self._door = threading.Condition()
         self._results: OrderedDict[Physics, Comparison | str] = OrderedDict()
@@ -91,7 +91,7 @@ class Desk:
         self._wanted: Physics | None = None
         self._doing = ""
         self._since = 0.0
-        self._last: Comparison = assess(compare(source.case), source.on)
+        self._last: Comparison = assess(compare(source.case, on_build), source.on)
         self._keep(State().physics, self._last)
         self._partial = {State().physics} if _has_life(source.case) else set()
         threading.Thread(target=self._work, name="results", daemon=True).start()

@@ -56,9 +56,9 @@ Change = Callable[[State, State, Mapping[str, str]], tuple[State, str]]
 class Session:
     """The meeting that all windows of one start share."""
 
-    def __init__(self, source: Source, units: str = "si") -> None:
+    def __init__(self, source: Source, units: str = "si", on_build: Callable[[str], None] | None = None) -> None:
         self.source = source
-        self.desk = Desk(source)
+        self.desk = Desk(source, on_build)
         self._lock = threading.RLock()
         self._history = History(State(units=units))
         self._refused: dict[str, Refused] = {}

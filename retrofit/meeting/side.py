@@ -4,12 +4,33 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
+from retrofit.meeting.how import slug
 from retrofit.report.rows import near
 from retrofit.report.table import Cell, Group, Row, Table
-from retrofit.study import Comparison
+from retrofit.study import Comparison, Entry
+from retrofit.study.bands import pair_band
 from retrofit.units import MISSING, UnitSystem, format_number
 
-DIFFERENCES = {"temperature": "temperature difference"}  # kinds whose difference is of another kind
+# Kinds whose difference is of another kind.
+DIFFERENCES = {"temperature": "temperature difference", "gauge pressure": "pressure difference"}
+# Rows and the band of the model that their differences are held against, by how the row's name begins.
+BANDS = (
+    ("pressures-", "pressure"),
+    ("plant-settled-evaporating-pressure", "pressure"),
+    ("plant-settled-condensing-pressure", "pressure"),
+    ("plant-settled-pressure-ratio", "pressure"),
+    ("temperatures-discharge", "T_discharge"),
+    ("plant-settled-discharge", "T_discharge"),
+    ("efficiency-cop", "cop"),
+    ("plant-full-cop", "cop"),
+    ("duty-compressor-power", "cop"),
+    ("duty-power", "cop"),
+    ("efficiency-", "capacity"),
+    ("duty-", "capacity"),
+    ("compressor-", "capacity"),
+    ("plant-full-", "capacity"),
+    ("plant-run-", "capacity"),
+)
 SAME, DIFFERS, CLOSE = "same", "differs", "close"
 
 
@@ -46,7 +67,11 @@ def side_by_side(view: Comparison, names: tuple[str, ...], table: Table, units: 
     if len(names) != 2 or not all(name in places for name in names):
         return None
     chosen = (0, places[names[0]], places[names[1]])
-    groups = tuple((group.heading, tuple(_line(row, chosen, units) for row in group.rows)) for group in table.groups)
+    pair = view.entries[chosen[1]], view.entries[chosen[2]]
+    groups = tuple(
+        (group.heading, tuple(_line(row, chosen, _band(group, row, pair), units) for row in group.rows))
+        for group in table.groups
+    )
     first, second = ({(f.level, f.title) for f in view.entries[place].findings} for place in chosen[1:])
     only = ((first - second), (second - first))
     findings = tuple(
@@ -56,27 +81,35 @@ def side_by_side(view: Comparison, names: tuple[str, ...], table: Table, units: 
     return Side(tuple(table.columns[place] for place in chosen), groups, findings)
 
 
-def _line(row: Row, chosen: tuple[int, int, int], units: UnitSystem) -> Line:
+def _band(group: Group, row: Row, pair: tuple[Entry, Entry]) -> float | None:
+    """Return the band that a difference between the two is held against: of a number relative, of a temperature in K.
+
+    None where the numbers follow from the temperatures held equal, and so differ exactly.
+    """
+    name = next((band for start, band in BANDS if slug(group, row).startswith(start)), None)
+    return None if name is None else pair_band(*pair, name)
+
+
+def _line(row: Row, chosen: tuple[int, int, int], band: float | None, units: UnitSystem) -> Line:
     cells = tuple(row.cells[place] for place in chosen)
-    if not row.values or cells[1].text == cells[2].text:
-        mark = SAME if cells[1].text == cells[2].text else DIFFERS
-        return Line(row.label, row.unit, cells, "", mark)
+    if cells[1].text == cells[2].text:
+        return Line(row.label, row.unit, cells, "", SAME)
+    if not row.values:
+        return Line(row.label, row.unit, cells, "", DIFFERS)
     first, second = row.values[chosen[1]], row.values[chosen[2]]
     if first is None or second is None:
         return Line(row.label, row.unit, cells, MISSING, DIFFERS)
-    difference = second - first
-    is_close = bool(row.bands) and abs(difference) <= max(row.bands[place] for place in chosen[1:])
-    text = _difference_text(row, difference, units)
-    return Line(row.label, row.unit, cells, near(text) if is_close else text, CLOSE if is_close else DIFFERS)
+    is_share = row.kind not in ("change", "temperature", "temperature difference") and first != 0.0
+    size = abs(second / first - 1.0) if is_share else abs(second - first)
+    text = _difference_text(row, second - first, units)
+    if band is not None and size <= band:
+        return Line(row.label, row.unit, cells, near(text), CLOSE)
+    return Line(row.label, row.unit, cells, text, DIFFERS)
 
 
 def _difference_text(row: Row, difference: float, units: UnitSystem) -> str:
+    """Return a difference with the digits of the row it belongs to."""
     if row.kind == "change":
         return format_number(100.0 * difference, 0, signed=True)
     kind = DIFFERENCES.get(row.kind, row.kind)
-    if row.kind == "gauge pressure":
-        kind = "pressure difference"
-    return units.text(kind, difference, signed=True)
-
-
-__all__ = ["Group", "Line", "Side", "side_by_side"]
+    return units.text(kind, difference, decimals=units.displays[row.kind].decimals_for(row.values), signed=True)

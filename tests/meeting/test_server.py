@@ -1,0 +1,87 @@
+"""The command itself: where it listens, how it ends, and what it says."""
+
+import os
+import re
+import signal
+import socket
+import subprocess
+import sys
+import time
+import urllib.request
+
+import pytest
+
+from tests.meeting.conftest import ROOT
+
+
+@pytest.fixture
+def started(case_file):
+    """Return a function that starts the command and gives process and address; it is ended after the test."""
+    processes = []
+
+    def start(*options):
+        process = subprocess.Popen(
+            [sys.executable, "-m", "retrofit", "meeting", str(case_file), "--no-browser", *options],
+            env={**os.environ, "PYTHONPATH": str(ROOT)},
+            stdout=subprocess.PIPE,
+            stderr=subprocess.PIPE,
+            text=True,
+        )
+        processes.append(process)
+        line = process.stdout.readline()
+        found = re.search(r"http://127\.0\.0\.1:[0-9]+/", line)
+        return process, found[0] if found else line + process.stderr.read()
+
+    yield start
+    for process in processes:
+        process.kill()
+        process.communicate()
+
+
+def test_it_serves_and_ends_with_the_keyboard(started, case_file):
+    """It says where the page is, answers there, survives what is no request at all, and ends cleanly by Ctrl-C."""
+    process, address = started()
+    port = int(address.rstrip("/").rpartition(":")[2])
+    for rubbish in (b"\x00\xff\r\n\r\n", b"GET\r\n\r\n", b"POST /change HTTP/1.1\r\nContent-Length: -5\r\n\r\n", b""):
+        with socket.create_connection(("127.0.0.1", port), timeout=5) as connection:
+            connection.sendall(rubbish)
+    with urllib.request.urlopen(address, timeout=20) as answer:
+        html = answer.read().decode()
+    process.send_signal(signal.SIGINT)
+    out, err = process.communicate(timeout=20)
+
+    assert "Harbour market" in html
+    assert process.returncode == 0
+    assert "The meeting is over" in out
+    assert "Traceback" not in err
+    assert [path.name for path in case_file.parent.iterdir()] == ["market.toml"]
+
+
+def test_it_listens_on_this_machine_alone(started):
+    """The port is open on 127.0.0.1 and on no other address of this machine."""
+    process, address = started()
+    port = int(address.rstrip("/").rpartition(":")[2])
+    with socket.socket(socket.AF_INET, socket.SOCK_DGRAM) as probe:
+        try:
+            probe.connect(("192.0.2.1", 9))  # sends nothing: it only tells which address would be used
+            other = probe.getsockname()[0]
+        except OSError:
+            other = "127.0.0.2"
+    time.sleep(0.1)
+
+    assert process.poll() is None
+    with pytest.raises((ConnectionError, TimeoutError)):
+        socket.create_connection((other, port), timeout=2).close()
+
+
+def test_a_port_that_is_taken_is_told(started):
+    """Another port is asked for in one line; no traceback."""
+    with socket.socket() as taken:
+        taken.bind(("127.0.0.1", 0))
+        taken.listen()
+        process, said = started("--port", str(taken.getsockname()[1]))
+        process.wait(timeout=20)
+
+    assert process.returncode == 1
+    assert "cannot be had" in said
+    assert "Traceback" not in said
