@@ -98,8 +98,8 @@ class Desk:
 
     @property
     def is_idle(self) -> bool:
-        """Return whether nothing is being made: pictures then have the machine for themselves."""
-        return self._wanted is None
+        """Return whether nothing is made, and was not just now: pictures then have the machine for themselves."""
+        return self._wanted is None and time.monotonic() - self._since > PAUSE_S
 
     def outcome(self, state: State, patience_s: float = PATIENCE_S) -> Outcome:
         """Return the result of a state, waiting a little for it.
