@@ -7,6 +7,7 @@ from typing import Any
 import numpy as np
 
 from retrofit.figures.drawing import Drawing, canvas, to_svg
+from retrofit.figures.labels import spread
 from retrofit.figures.scales import enthalpies, limit_line, log_ticks, temperature_ticks
 from retrofit.figures.style import HAIRLINE, INK, LABEL_PT, THIN, mark_of
 from retrofit.study import ChartLines, Comparison, Entry
@@ -210,7 +211,7 @@ def _end_labels(axes: Any, group: list[Placed], units: UnitSystem) -> None:
     ends.sort(key=lambda end: (-end[0], end[1]))
     low, high = (np.log(value) for value in axes.get_ylim())
     wanted = [(np.log(p) - low) / (high - low) for p, *_ in ends]
-    heights = _spread(wanted, 0.055)
+    heights = spread(wanted, 0.055)
     for (p_end, h_end, place, label), height in zip(ends, heights, strict=True):
         mark = mark_of(place)
         axes.annotate(
@@ -228,18 +229,6 @@ def _end_labels(axes: Any, group: list[Placed], units: UnitSystem) -> None:
         axes.plot(
             [1.015], [height], mark.marker, color=mark.colour, markersize=5, transform=axes.transAxes, clip_on=False
         )
-
-
-def _spread(wanted: list[float], least: float) -> list[float]:
-    """Return heights, falling, at least `least` apart and centred on the wanted ones."""
-    heights: list[float] = []
-    for value in wanted:
-        heights.append(min(value, heights[-1] - least) if heights else value)
-    if not heights:
-        return heights
-    shift = (sum(wanted) - sum(heights)) / len(heights)
-    shift = max(0.02 - heights[-1], min(shift, 0.99 - heights[0]))
-    return [height + shift for height in heights]
 
 
 def _cycle_words(entry: Entry, units: UnitSystem) -> str:

@@ -40,6 +40,7 @@ LOOK: dict[str, Any] = {
     "svg.fonttype": "none",
     "svg.hashsalt": "retrofit",
     "axes.unicode_minus": True,
+    "text.parse_math": False,  # a currency may be a dollar sign
     "path.simplify": True,
 }
 

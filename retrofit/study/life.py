@@ -10,7 +10,7 @@ import numpy as np
 from retrofit.case import Case
 from retrofit.errors import RetrofitError
 from retrofit.properties import fluid
-from retrofit.study.accounts import Accounts, accounts
+from retrofit.study.accounts import Account, Accounts, accounts
 from retrofit.study.bands import band_of
 from retrofit.study.draws import (
     DesignRows,
@@ -110,19 +110,23 @@ class Life:
         years: The year by designation; one that is not there has its reason in `no_year`.
         no_year: Why a refrigerant has no year, by designation.
         accounts: Emissions and money with every input at its base.
+        three: The same thrice, shape (3,): every input low, at its base, and high at once; no bounds of a result.
         inputs: What may be off.
         draws, seed: Number of draws, and what they follow from.
         certainty: By designation, only of refrigerants that are computed.
+        as_is: How sure the numbers of the plant as it is are; None without draws.
     """
 
     asked: YearConditions | None
     years: Mapping[str, YearRun]
     no_year: Mapping[str, str]
     accounts: Accounts
+    three: Accounts
     inputs: tuple[Uncertain, ...]
     draws: int
     seed: int
     certainty: Mapping[str, Certainty]
+    as_is: Certainty | None = None
 
 
 def with_life(comparison: Comparison, draws: int = DRAWS, seed: int = SEED) -> Comparison:
@@ -172,7 +176,8 @@ def life_of(comparison: Comparison, draws: int = DRAWS, seed: int = SEED, *, hou
         else:
             years[name] = found
     uses = {name: Use(year.energy_J, year.peak_W) for name, year in years.items()}
-    life = Life(asked, years, no_year, accounts(comparison, uses, base_only), (), 0, seed, {})
+    base, three = accounts(comparison, uses, base_only), accounts(comparison, uses)
+    life = Life(asked, years, no_year, base, three, (), 0, seed, {})
     return life if today is None or draws < 1 else _drawn(comparison, life, ways, draws)
 
 
@@ -237,8 +242,13 @@ def _drawn(comparison: Comparison, life: Life, ways: list[_Way], draws: int) -> 
         if years is not None and name in life.years:
             uses[name] = _use(today, way, years, error, life.years[name])
     money = accounts(comparison, uses, rows.pick)
-    certainty = {name: _certainty(rows, _results(comparison, name, designs, uses, money)) for name in designs}
-    return replace(life, inputs=rows.inputs, draws=draws, certainty=certainty)
+    certainty = {
+        name: _certainty(rows, _results(comparison, name, designs, uses, money, money.options[name]))
+        for name in designs
+    }
+    name = comparison.case.plant.refrigerant
+    as_is = _certainty(rows, _results(comparison, name, designs, uses, money, money.as_is))
+    return replace(life, inputs=rows.inputs, draws=draws, certainty=certainty, as_is=as_is)
 
 
 def _inputs(comparison: Comparison, life: Life) -> Iterator[Uncertain]:
@@ -281,7 +291,12 @@ def _use(today: Today, way: _Way, years: YearByMap, error: ModelError, base: Yea
 
 
 def _results(
-    comparison: Comparison, name: str, designs: Mapping[str, DesignRows], uses: Mapping[str, Use], money: Accounts
+    comparison: Comparison,
+    name: str,
+    designs: Mapping[str, DesignRows],
+    uses: Mapping[str, Use],
+    money: Accounts,
+    account: Account,
 ) -> dict[str, FloatArray]:
     """Return every quantity of an option that is known, shape (rows,)."""
     today, own = comparison.case.plant.refrigerant, designs[name]
@@ -294,7 +309,6 @@ def _results(
     if name in uses and today in uses:
         energy, as_is = np.asarray(uses[name].electricity_J), np.asarray(uses[today].electricity_J)
         found |= {"energy_J": energy, "energy_saving_J": as_is - energy, "energy_ratio": energy / as_is}
-    account = money.options[name]
     found |= {"tewi_kg": account.tewi.total_kg, "direct_kg": account.tewi.direct_kg}
     if account.first_cost and account.yearly_cost and account.saving and account.appraisal:
         extra = account.appraisal.extra_cost

@@ -27,7 +27,7 @@ DAY_H = 24.0
 UNMET_SHARE = 1e-3  # of the load: less is rounding of the plant's own numbers
 AIR_BIN_K = 2.0
 TOGETHER_K, TOGETHER_SHARE = 1.0, 0.05  # conditions of a year this close are alike
-SINKS, SOURCES = 9, 5  # nodes of a map
+SINKS, SOURCES = 13, 5  # nodes of a map
 SHORTEST_AXIS_K = 20.0  # of a map: a year that hardly varies still shows what a hotter one would do
 EXISTING, SIZED, BY_MAKER = "existing plant", "new plant of today's size", "new plant by its maker's seasonal COP"
 
@@ -435,19 +435,28 @@ def _by_air(asked: YearConditions, power_W: FloatArray, unmet_W: FloatArray) -> 
 
 
 def plant_map(ready: YearPlant, asked: YearConditions) -> PlantMap:
-    """Return what the plant does at full over the temperatures at its inlets that a year has, and a little beyond.
+    """Return what the plant does at full over the temperatures at its inlets that a year has, and the hottest day.
 
     Args:
         ready: The plant with its refrigerant.
         asked: What the year asks.
     """
-    sinks = _axis(asked.T_cond_in_K, SINKS)
+    sinks = _axis(np.append(asked.T_cond_in_K, _hottest_K(ready.plant.case)), SINKS)
     sources = _axis(asked.T_evap_in_K, SOURCES)
     machine, starts = ready.at(sources[None, :], sinks[:, None])
     found = balanced(balance(ready.behaviour, machine, *starts))
     power = electric_W(ready.plant.case, found.power_W)
     cop = delivered_W(found, asked.serves) / power
     return PlantMap(sinks, sources, found.cooling_W, power, cop, found.T_discharge_K, found.p_cond_Pa)
+
+
+def _hottest_K(case: Case) -> list[float]:
+    """Return temperatures at the inlet of the condenser that the plant is judged by, whatever the year."""
+    assert case.condenser is not None
+    assert case.year is not None
+    hottest = case.plant.highest_ambient_K if case.year.condenser_follows == "dry bulb" else None
+    ambient = None if hottest is None else hottest + case.year.condenser_approach_K
+    return [T_K for T_K in (case.condenser.inlet_K, ambient) if T_K is not None]
 
 
 def _axis(T_K: FloatArray, nodes: int) -> FloatArray:

@@ -1,0 +1,542 @@
+"""The remaining life in words: year, emissions, money, how sure they are, and what moves the answer most."""
+
+from __future__ import annotations
+
+import math
+import re
+from collections.abc import Callable, Iterator, Sequence
+from dataclasses import dataclass
+
+from retrofit.checks.answer import Matter
+from retrofit.checks.prospects import (
+    FAR_FROM_METER,
+    Prospect,
+    Ranked,
+    difference,
+    first_cost_range,
+    groups,
+    is_alike,
+    leading,
+    life_cost,
+    life_of_result,
+    missing_words,
+    probability,
+    prospects,
+    quantile,
+    ranked,
+)
+from retrofit.study import Comparison
+from retrofit.study.bands import model_band
+from retrofit.study.emissions import Tewi
+from retrofit.study.life import Swing
+from retrofit.study.money import cost_per_tonne_words, payback_words
+from retrofit.study.ranking import stability_words
+from retrofit.units import UnitSystem, format_number, listed, shown
+
+NBSP = "\N{NO-BREAK SPACE}"
+UNKNOWN = "unknown"
+KG_PER_T = 1000.0
+DIGITS = 4  # of a computed sum or energy: the model knows two of them, the others let sums be checked
+STRONGEST = 3  # inputs that the sentence names
+# Results whose strongest inputs are told, the first one known of an option first; and what each is in words.
+TOLD = {
+    "yearly_saving": "yearly saving",
+    "avoided_t": "CO2e avoided over the remaining life",
+    "energy_saving_J": "electricity saved in a year",
+    "cop_ratio": "COP against today's",
+    "capacity_ratio": "cooling at full against today's",
+}
+RATIOS = ("cop_ratio", "capacity_ratio")
+
+
+@dataclass(frozen=True)
+class Outlook:
+    """The remaining life in words, names of refrigerants as designations.
+
+    Attributes:
+        year, emissions, money, certainty: Matters by section, those that there are.
+        meter: The computed year against the meter; empty if the case has none.
+        swing: What moves the answer most; empty without draws.
+        ranking: Which option comes first under even weights, sentence by sentence.
+    """
+
+    year: tuple[Matter, ...]
+    emissions: tuple[Matter, ...]
+    money: tuple[Matter, ...]
+    certainty: tuple[Matter, ...]
+    meter: str
+    swing: str
+    ranking: tuple[str, ...]
+
+    @property
+    def matters(self) -> tuple[Matter, ...]:
+        """Return all matters in their order."""
+        return (*self.year, *self.emissions, *self.money, *self.certainty)
+
+
+def outlook(comparison: Comparison, units: UnitSystem) -> Outlook:
+    """Return the remaining life in words.
+
+    Args:
+        comparison: An assessed result with its remaining life.
+        units: The reader's units.
+    """
+    options = prospects(comparison)
+    return Outlook(
+        year=_there(_energy(options, units), _alike(options[1:], "energy"), _unmet(options, units)),
+        emissions=_there(_emissions(options), _alike(options[1:], "emissions")),
+        money=_there(*_money(comparison, options)) if comparison.case.money else (),
+        certainty=_there(_certainty(comparison, options)),
+        meter=meter_words(comparison, units),
+        swing=swing_words(comparison, units),
+        ranking=ranking_words(ranked(comparison)),
+    )
+
+
+def _there(*matters: Matter) -> tuple[Matter, ...]:
+    return tuple(matter for matter in matters if matter.groups)
+
+
+# Numbers as words
+
+
+def percent(ratio: float | None, decimals: int = 0) -> str:
+    """Return a relative difference in percent with its sign, or unknown.
+
+    Args:
+        ratio: The difference. [-]
+        decimals: Decimals. [-]
+    """
+    return UNKNOWN if ratio is None else f"{format_number(100.0 * ratio, decimals, signed=True)}{NBSP}%"
+
+
+def share(value: float | None) -> str:
+    """Return a probability as whole percent, 0 and 100 for none and all alone; or unknown.
+
+    Args:
+        value: The probability. [-]
+    """
+    if value is None:
+        return UNKNOWN
+    whole = round(100.0 * value)
+    if whole == 0 and value > 0.0:
+        return f"less than 1{NBSP}%"
+    return f"more than 99{NBSP}%" if whole == 100 and value < 1.0 else f"{whole}{NBSP}%"
+
+
+def rounded_text(number: float, signed: bool = False) -> str:
+    """Return a computed number with four digits at most, whole where it is large.
+
+    Args:
+        number: The number. [any]
+        signed: Whether a plus sign stands before it. [-]
+    """
+    size = abs(number)
+    if size >= 1000.0:
+        places = DIGITS - 1 - math.floor(math.log10(size))
+        return format_number(round(number, min(places, 0)), 0, signed=signed)
+    return format_number(number, 0 if size >= 100.0 else 1 if size >= 10.0 else 2, signed=signed)
+
+
+def money_text(comparison: Comparison, amount: float | None, signed: bool = False) -> str:
+    """Return a sum with the currency of the case, or unknown.
+
+    Args:
+        comparison: The result.
+        amount: The sum. [currency]
+        signed: Whether a plus sign stands before it. [-]
+    """
+    if amount is None or not math.isfinite(amount):
+        return UNKNOWN
+    return f"{rounded_text(amount, signed)}{NBSP}{currency(comparison)}"
+
+
+def currency(comparison: Comparison) -> str:
+    """Return the currency of a case, fit to be shown."""
+    return shown(comparison.case.money.currency) if comparison.case.money else ""
+
+
+def energy_text(units: UnitSystem, energy_J: float | None, signed: bool = False) -> str:
+    """Return an energy with its unit, or unknown.
+
+    Args:
+        units: The reader's units.
+        energy_J: The energy. [J]
+        signed: Whether a plus sign stands before it. [-]
+    """
+    if energy_J is None:
+        return UNKNOWN
+    return f"{rounded_text(float(units.number('energy', energy_J)), signed)}{NBSP}{units.label('energy')}"
+
+
+def life_text(warming: Tewi) -> str:
+    """Return the remaining life in words."""
+    return "the remaining life" if warming.life_years is None else f"the remaining {float(warming.life_years):g} years"
+
+
+# The year
+
+
+Sorted = Sequence[tuple[str, list[str]]]
+
+
+def _by_difference(
+    options: Sequence[Prospect], quantity: str, words: tuple[str, str, str], amount: Callable[[Prospect], str]
+) -> tuple[tuple[str, tuple[str, ...]], ...]:
+    """Sort options by whether they differ from the plant as it is by more than the band; what is not known last."""
+    less, near, more = words
+    found: dict[str, list[str]] = {less: [], near: [], more: []}
+    for option in options[1:]:
+        change = difference(options[0], option, quantity)
+        if change.amount is None:
+            found.setdefault(f"unknown, for want of {change.missing}", []).append(option.name)
+        else:
+            where = near if change.is_alike else less if change.amount < 0.0 else more
+            found[where].append(f"{option.name} {amount(option)}")
+    return tuple((heading, tuple(names)) for heading, names in found.items() if names)
+
+
+def _energy(options: tuple[Prospect, ...], units: UnitSystem) -> Matter:
+    if all(option.year is None for option in options):
+        return Matter("Electricity of a year", ())
+    as_is = options[0]
+    today = energy_text(units, as_is.year.energy_J if as_is.year else None)
+    words = ("less", f"no meaningful difference, {_within()}", "more")
+    found = _by_difference(options, "energy", words, lambda p: percent(difference(as_is, p, "energy").ratio))
+    return Matter(f"Electricity of a year, against {today} with {as_is.name} as it is", found)
+
+
+def _within() -> str:
+    return f"within the band of the model, ±{model_band()['cop'].value:.0%} or its own wider one"
+
+
+def _alike(options: Sequence[Prospect], quantity: str) -> Matter:
+    """Return which options the model cannot tell apart among themselves."""
+    apart = [option for option in options if option.deed != "kept, with its repairs"]
+    found = [listed([option.name for option in group], "and") for group in groups(apart, quantity)]
+    about = {"energy": "Electricity of a year", "emissions": "Warming", "cost": "Cost over the remaining life"}[
+        quantity
+    ]
+    return Matter(f"{about}, options among themselves", (("no meaningful difference", tuple(found)),) if found else ())
+
+
+def _unmet(options: tuple[Prospect, ...], units: UnitSystem) -> Matter:
+    """Return which options leave some of the load unmet: less electricity then buys less."""
+    meets, lacks = [], []
+    for option in options:
+        if option.year is None:
+            continue
+        if option.year.unmet_h > 0.0:
+            hours, energy = format_number(option.year.unmet_h, 0), energy_text(units, option.year.unmet_J)
+            lacks.append(f"{option.name} {hours}{NBSP}h, {energy}")
+        else:
+            meets.append(option.name)
+    words = "some of it unmet, so that part of a lower electricity is load not met"
+    found = tuple((text, tuple(names)) for text, names in (("met in every hour", meets), (words, lacks)) if names)
+    return Matter("Load of the year", found if lacks else ())
+
+
+def meter_words(comparison: Comparison, units: UnitSystem) -> str:
+    """Return the computed year of today's plant against the meter in words; empty if the case gives none.
+
+    Args:
+        comparison: A result with its remaining life.
+        units: The reader's units.
+    """
+    year, asked = comparison.case.year, life_of_result(comparison)
+    run = asked.years.get(comparison.case.plant.refrigerant)
+    if year is None or year.metered_J is None:
+        return ""
+    metered = energy_text(units, year.metered_J)
+    if run is None:
+        return (
+            f"The meter says {metered} a year; the year of today's plant is not computed, so it cannot be held to it."
+        )
+    ratio = run.energy_J / year.metered_J
+    text = f"Computed for today's plant {energy_text(units, run.energy_J)}, metered {metered}: ratio {ratio:.2f}."
+    if abs(ratio - 1.0) > FAR_FROM_METER:
+        limit = f"{FAR_FROM_METER:.0%}"
+        return (
+            f"{text} They are more than {limit} apart: find out what the meter counts, and correct load and "
+            "auxiliaries, before the sums are relied on. Nothing is scaled to the meter."
+        )
+    return f"{text} A check of the model, within {FAR_FROM_METER:.0%}; nothing is scaled to it."
+
+
+# Emissions
+
+
+def tonnes(mass_kg: float | None) -> str:
+    """Return a warming in tonnes of CO2e, or unknown.
+
+    Args:
+        mass_kg: Warming. [kg CO2e]
+    """
+    return UNKNOWN if mass_kg is None else f"{rounded_text(mass_kg / KG_PER_T)}{NBSP}t{NBSP}CO2e"
+
+
+def _emissions(options: tuple[Prospect, ...]) -> Matter:
+    as_is = options[0]
+    warming = as_is.account.tewi
+    if all(option.account.tewi.total_kg is None for option in options):
+        return Matter("Warming", ())
+    today = tonnes(None if warming.total_kg is None else float(warming.total_kg))
+    words = ("less", f"no meaningful difference, {_within()} in the electricity", "more")
+    found = _by_difference(options, "emissions", words, lambda p: percent(difference(as_is, p, "emissions").ratio))
+    return Matter(f"Warming over {life_text(warming)} (TEWI), against {today} with {as_is.name} as it is", found)
+
+
+# Money
+
+
+def _money(comparison: Comparison, options: tuple[Prospect, ...]) -> Iterator[Matter]:
+    as_is = options[0]
+    words = ("cheaper", f"no meaningful difference, {_within()} in the electricity", "dearer")
+    found = _by_difference(options, "cost", words, lambda p: money_text(comparison, life_cost(p), signed=True))
+    yield Matter(f"Cost over {life_text(as_is.account.tewi)}, first cost included, against the plant as it is", found)
+    yield Matter("Simple payback, first cost over yearly saving", _paybacks(options))
+
+
+def _paybacks(options: tuple[Prospect, ...]) -> tuple[tuple[str, tuple[str, ...]], ...]:
+    found: dict[str, list[str]] = {text: [] for text in PAYBACKS}
+    for option in options[1:]:
+        found.setdefault(_payback_group(options[0], option), []).append(_payback_amount(option))
+    return tuple((text, tuple(names)) for text, names in found.items() if names)
+
+
+PAYBACKS = (
+    "within the remaining life",
+    "within it, but by a saving that the model cannot tell from none",
+    "not within the remaining life",
+    "none, since a year costs no less than with the plant as it is",
+    "nothing to pay back",
+)
+
+
+def _payback_group(as_is: Prospect, option: Prospect) -> str:
+    appraisal = option.account.appraisal
+    if appraisal is None or appraisal.payback_years is None:
+        return f"unknown, for want of {missing_words(option, 'cost')}"
+    years, life = float(appraisal.payback_years), appraisal.life_years
+    if math.isinf(years):
+        return PAYBACKS[3]
+    if years == 0.0:
+        return PAYBACKS[4]
+    if life is None:
+        return "of a remaining life that is not given"
+    if years > float(life):
+        return PAYBACKS[2]
+    return PAYBACKS[1 if is_alike(as_is, option, "saving") else 0]
+
+
+def _payback_amount(option: Prospect) -> str:
+    appraisal = option.account.appraisal
+    years = None if appraisal is None or appraisal.payback_years is None else float(appraisal.payback_years)
+    return option.name if not years or math.isinf(years) else f"{option.name} {years:.1f} years"
+
+
+# How sure
+
+
+def _certainty(comparison: Comparison, options: tuple[Prospect, ...]) -> Matter:
+    draws, found = life_of_result(comparison).draws, []
+    for text, name in (
+        ("carries the cooling needed at the design point", "carries"),
+        ("uses less electricity in a year than the plant as it is", "uses_less"),
+        ("costs less over the remaining life", "cheaper"),
+        ("warms less over the remaining life", "cleaner"),
+    ):
+        names = tuple(
+            f"{option.name} {share(probability(option, name))}"
+            for option in options[1:]
+            if probability(option, name) is not None
+        )
+        if names:
+            found.append((text, names))
+    return Matter(f"Share of {draws} draws of the inputs in which an option", tuple(found))
+
+
+def told_result(option: Prospect) -> str | None:
+    """Return the result of an option whose strongest inputs are told: money if known, else emissions, else energy.
+
+    Args:
+        option: The option.
+    """
+    swings = option.certainty.swings if option.certainty else {}
+    return next((name for name in TOLD if swings.get(name)), None)
+
+
+def result_text(comparison: Comparison, units: UnitSystem, name: str, value: float, signed: bool = True) -> str:
+    """Return a value of a result whose inputs are told, with its unit.
+
+    Args:
+        comparison: The result.
+        units: The reader's units.
+        name: A key of `TOLD`. [-]
+        value: The value. [SI, t CO2e or currency]
+        signed: Whether a plus sign stands before it. [-]
+    """
+    if name in RATIOS:
+        return percent(value - 1.0, 1)
+    if name == "energy_saving_J":
+        return energy_text(units, value, signed)
+    if name == "avoided_t":
+        return f"{rounded_text(value, signed)}{NBSP}t{NBSP}CO2e"
+    return money_text(comparison, value, signed)
+
+
+def swing_words(comparison: Comparison, units: UnitSystem) -> str:
+    """Return in words which inputs move the answer most; empty without draws.
+
+    Args:
+        comparison: An assessed result with its remaining life.
+        units: The reader's units.
+    """
+    option = leading(comparison)
+    name = told_result(option) if option else None
+    if option is None or name is None or option.certainty is None:
+        return ""
+
+    def reach(swing: Swing) -> str:
+        ends = sorted((swing.at_low, swing.at_high))
+        low, high = (result_text(comparison, units, name, value) for value in ends)
+        return f"{input_words(swing)} ({low} to {high})"
+
+    strongest = option.certainty.swings[name][:STRONGEST]
+    base = result_text(comparison, units, name, strongest[0].base)
+    return (
+        f"What moves the answer most: for {option.name}, {TOLD[name]} ({base} with every input at its base), it is "
+        f"{listed([reach(swing) for swing in strongest], 'and')}, each moved alone between its limits."
+    )
+
+
+def input_words(swing: Swing) -> str:
+    """Return an input as running text: without its explanation, and with a small first letter."""
+    if swing.input.origin == "model":
+        return f"the model's {re.sub(r'R-(?=[0-9])', 'R', swing.input.name.removeprefix('Model: '))}"
+    short = swing.input.name.partition(";")[0].partition(":")[0]
+    return short if short[:2].isupper() else short[:1].lower() + short[1:]
+
+
+# Which comes first
+
+
+def ranking_words(found: Ranked) -> tuple[str, ...]:
+    """Return which option comes first under even weights, how stable that is, and what would change it.
+
+    Args:
+        found: The options in order.
+    """
+    if found.stability is None:
+        return ("No option can be ranked: a gate stops each, or none of the criteria is known.",)
+    first = [name for name, place in zip(found.order.names, found.order.places, strict=True) if place == 1]
+    tie = ", no meaningful difference among them" if len(first) > 1 else ""
+    sentences = [f"With even weights {listed(first, 'and')} come{'' if tie else 's'} first{tie}."]
+    sentences.append(stability_words(found.scores, found.stability))
+    if found.flip is not None:
+        sentences.append(found.flip.words)
+    elif len(found.scores.names) > 1:
+        sentences.append("No change of a single weight puts another option first by more than the band.")
+    return tuple(sentences)
+
+
+# Page one
+
+
+def costs_words(comparison: Comparison, units: UnitSystem) -> str:
+    """Return in a few sentences what the options cost and save, for page one; empty without the remaining life.
+
+    Args:
+        comparison: An assessed result, with or without its remaining life.
+        units: The reader's units.
+    """
+    if comparison.life is None:
+        return ""
+    as_is, *others = prospects(comparison)
+    named = _named(comparison, others)
+    parts = [_cost_words(comparison, units, as_is, option) for option in named]
+    more = len(others) - len(named)
+    if more:
+        parts.append(f"{more} more option{'s' if more > 1 else ''} in the sections on year and money.")
+    return " ".join(parts)
+
+
+MOST_ON_PAGE_ONE = 3
+
+
+def _named(comparison: Comparison, options: Sequence[Prospect]) -> list[Prospect]:
+    """Return the options that page one tells: those of the case, else the first that no check stops."""
+    report = comparison.case.report
+    chosen = [name for name in ((report.recommended, report.fallback) if report else ()) if name]
+    if chosen:
+        return [option for option in options if option.entry.refrigerant.designation in chosen]
+    open_ = [option for option in options if not any(finding.level == "stop" for finding in option.entry.findings)]
+    return (open_ or list(options))[:MOST_ON_PAGE_ONE]
+
+
+def _cost_words(comparison: Comparison, units: UnitSystem, as_is: Prospect, option: Prospect) -> str:
+    year, warming = difference(as_is, option, "energy"), difference(as_is, option, "emissions")
+    parts = [_year_words(year.ratio, year.is_alike, year.missing)]
+    if comparison.case.money is not None:
+        parts.insert(0, f"first cost {_first_cost_words(comparison, option)}")
+        by = (
+            ", by a saving that the model cannot tell from none" if _payback_group(as_is, option) == PAYBACKS[1] else ""
+        )
+        parts.append(payback_text(option) + by)
+    if warming.ratio is not None:
+        near = ", no meaningful difference" if warming.is_alike else ""
+        parts.append(f"warming {percent(warming.ratio)}{near}")
+    return f"{option.name}: {'; '.join(parts)}."
+
+
+def _year_words(ratio: float | None, is_near: bool, missing: str) -> str:
+    if ratio is None:
+        return f"electricity of a year unknown ({missing})"
+    more = "less" if ratio < 0.0 else "more"
+    if ratio == 0.0:
+        return "the same electricity in a year"
+    amount = f"{format_number(abs(100.0 * ratio), 0)}{NBSP}%"
+    return f"{amount} {more} electricity in a year{': no meaningful difference' if is_near else ''}"
+
+
+def _first_cost_words(comparison: Comparison, option: Prospect) -> str:
+    found = first_cost_range(option)
+    first = option.account.first_cost
+    if found is None:
+        return f"unknown ({first.missing if first and first.missing else 'not given'})"
+    low, base, high = found
+    spread = f" ({rounded_text(low)} to {rounded_text(high)})" if low < high else ""
+    return money_text(comparison, base) + spread
+
+
+def payback_text(option: Prospect) -> str:
+    """Return the payback of an option in words."""
+    appraisal = option.account.appraisal
+    words = "payback unknown" if appraisal is None else payback_words(appraisal)
+    return words if words.startswith(("payback", "no payback", "nothing")) else f"payback in {words}"
+
+
+def per_tonne_text(comparison: Comparison, option: Prospect) -> str:
+    """Return the cost of each tonne of CO2e avoided in words.
+
+    Args:
+        comparison: The result.
+        option: The option.
+    """
+    appraisal = option.account.appraisal
+    return UNKNOWN if appraisal is None else cost_per_tonne_words(appraisal, currency(comparison))
+
+
+def range_text(option: Prospect, name: str, to_number: Callable[[float], float]) -> str:
+    """Return the range in which 8 of 10 draws lie; empty if not known.
+
+    Args:
+        option: The option.
+        name: Name of the result. [-]
+        to_number: From its unit to that of the reader.
+    """
+    found = quantile(option, name)
+    if found is None:
+        return ""
+    low, high = (rounded_text(to_number(value)) if math.isfinite(value) else "never" for value in (found[0], found[2]))
+    return f"{low} to {high}"

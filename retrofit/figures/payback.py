@@ -1,0 +1,81 @@
+"""What each option has cost by then more than the plant as it is, year by year, with its payback."""
+
+from __future__ import annotations
+
+from typing import Any
+
+import numpy as np
+
+from retrofit.checks.outlook import currency
+from retrofit.checks.prospects import Prospect, prospects
+from retrofit.figures.drawing import Drawing, canvas, to_svg
+from retrofit.figures.labels import end_labels, label_of, mark_in, thousands, upright
+from retrofit.figures.style import INK, SMALL_PT, THIN
+from retrofit.study import Comparison
+from retrofit.units import format_number
+
+
+def payback_chart(comparison: Comparison) -> Drawing | None:
+    """Draw what each option has cost more than the plant as it is against the years, and mark its payback.
+
+    Args:
+        comparison: A result with its remaining life.
+    Returns: The chart in the currency of the case; None if nothing of it is known.
+    """
+    options = [option for option in prospects(comparison)[1:] if _extra(option) is not None]
+    if not options:
+        return None
+    with canvas(3.1, 0.85, 1.15, 0.26, 0.46) as figure:
+        axes = figure.subplots()
+        axes.axhline(0.0, color=INK, linewidth=THIN)
+        lines = [_line(comparison, axes, option) for option in options]
+        life = max(float(x[-1]) for x, _ in lines)
+        axes.set_xlim(0.0, life)
+        axes.margins(y=0.08)
+        axes.set_ylim(axes.get_ylim())
+        thousands(axes.yaxis)
+        upright(axes, life, f"end of the remaining life, {life:g} years", "right")
+        ends = [(float(y[-1]), mark_in(comparison, o), label_of(o)) for o, (_, y) in zip(options, lines, strict=True)]
+        end_labels(axes, ends, 0.07)
+        axes.annotate(
+            "dearer so far", (0.0, 0.0), (4, 3), textcoords="offset points", fontsize=SMALL_PT, style="italic"
+        )
+        axes.annotate("paid back", (0.0, 0.0), (4, -3), textcoords="offset points", fontsize=SMALL_PT, va="top",
+                      style="italic")  # fmt: skip
+        axes.set_xlabel("Years from the change")
+        axes.set_ylabel(f"Cost so far, less as it is [{currency(comparison)}]")
+        words = "; ".join(_words(option) for option in options)
+        svg = to_svg(figure, "payback", "Cost over the years", f"In {currency(comparison)}: {words}")
+    left_out = [label_of(option) for option in prospects(comparison)[1:] if _extra(option) is None]
+    more = f" Not drawn, since first cost, saving or life is unknown: {', '.join(left_out)}." if left_out else ""
+    caption = (
+        "What each option has cost more than the plant as it is, first cost and every year since. Where its line comes "
+        f"down to zero it has paid back (ring); prices as today, nothing discounted.{more}"
+    )
+    return Drawing("payback", svg, caption, words)
+
+
+def _extra(option: Prospect) -> Any:
+    return option.account.appraisal.extra_cost if option.account.appraisal else None
+
+
+def _line(comparison: Comparison, axes: Any, option: Prospect) -> tuple[Any, Any]:
+    mark, appraisal = mark_in(comparison, option), option.account.appraisal
+    assert appraisal is not None
+    x, y = np.asarray(appraisal.years), np.asarray(appraisal.extra_cost)
+    axes.plot(x, y, color=mark.colour, linestyle=mark.dash, linewidth=mark.width, marker=mark.marker, markersize=3.5)
+    payback = None if appraisal.payback_years is None else float(appraisal.payback_years)
+    if payback and payback <= float(x[-1]):
+        axes.plot([payback], [0.0], "o", markersize=8, markerfacecolor="none", markeredgecolor=mark.colour)
+        axes.annotate(f"{payback:.1f}", (payback, 0.0), (0, 6), textcoords="offset points", ha="center", va="bottom",
+                      fontsize=SMALL_PT)  # fmt: skip
+    return x, y
+
+
+def _words(option: Prospect) -> str:
+    extra, appraisal = np.asarray(_extra(option)), option.account.appraisal
+    payback = appraisal.payback_years if appraisal else None
+    years = None if payback is None or not np.isfinite(payback) else float(payback)
+    back = f"payback after {years:.1f} years" if years else "no payback" if years is None else "nothing to pay back"
+    first, last = (format_number(float(value), 0) for value in (extra[0], extra[-1]))
+    return f"{label_of(option)} from {first} to {last}, {back}"

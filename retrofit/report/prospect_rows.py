@@ -1,0 +1,130 @@
+"""Rows of the tables of the remaining life: a cell for each option, `unknown` with a note where something is missing."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass
+
+from retrofit.checks.outlook import UNKNOWN, percent, rounded_text
+from retrofit.checks.prospects import Prospect, difference, missing_words, quantile
+from retrofit.report.front import plain
+from retrofit.report.judging import spelled
+from retrofit.report.rows import near
+from retrofit.report.table import Cell, Notes, Row
+from retrofit.study import Comparison
+from retrofit.units import MISSING
+
+Read = Callable[[Prospect], float | None]
+SAME = {"as it is": "", "kept, with its repairs": " kept"}
+
+
+@dataclass(frozen=True)
+class Options:
+    """Options side by side in one table, and the notes that its cells make."""
+
+    all: tuple[Prospect, ...]
+    notes: Notes
+
+    @property
+    def names(self) -> tuple[str, ...]:
+        """Return the headings of the columns; the first is the plant as it is."""
+        return tuple(shown_name(option) for option in self.all)
+
+    def row(
+        self, label: str, unit: str, read: Read, show: Callable[[float], str], why: Callable[[Prospect], str]
+    ) -> Row:
+        """Return a row of numbers; one that is not known reads so, with what is missing in a note.
+
+        Args:
+            label: What they are.
+            unit: Their unit.
+            read: The number of an option.
+            show: Its text.
+            why: What is missing if there is none.
+        """
+        return Row(label, unit, tuple(self._cell(option, read(option), show, why) for option in self.all))
+
+    def _cell(
+        self, option: Prospect, value: float | None, show: Callable[[float], str], why: Callable[[Prospect], str]
+    ) -> Cell:
+        return self.unknown(option, why(option)) if value is None else Cell(show(value))
+
+    def unknown(self, option: Prospect, why: str) -> Cell:
+        """Return a cell of what is not known, with what is missing in a note if that can be said."""
+        marks = (self.notes.mark(shown_name(option), f"unknown, for want of {spelled(why)}"),) if why else ()
+        return Cell(UNKNOWN, is_number=False, marks=marks)
+
+    def changes(self, label: str, quantity: str) -> Row:
+        """Return a row of differences from the plant as it is; one that the model cannot tell carries the sign ≈.
+
+        Args:
+            label: What they are.
+            quantity: "energy" or "emissions".
+        """
+
+        def cell(option: Prospect) -> Cell:
+            if option is self.all[0]:
+                return Cell(MISSING)
+            found = difference(self.all[0], option, quantity)
+            if found.ratio is None:
+                return self.unknown(option, found.missing)
+            text = percent(found.ratio).removesuffix("\N{NO-BREAK SPACE}%")
+            return Cell(near(text) if found.is_alike else text)
+
+        return Row(label, "%", tuple(cell(option) for option in self.all))
+
+    def ranges(self, label: str, unit: str, name: str, to_number: Callable[[float], float]) -> Row:
+        """Return a row of ranges in which 8 of 10 draws lie.
+
+        Args:
+            label: What they are.
+            unit: Their unit.
+            name: Name of the result.
+            to_number: From its unit to that of the row.
+        """
+
+        def cell(option: Prospect) -> Cell:
+            found = quantile(option, name)
+            if found is None:
+                return Cell(MISSING)
+            return Cell(f"{range_end(found[0], to_number)} to {range_end(found[2], to_number)}")
+
+        return Row(label, unit, tuple(cell(option) for option in self.all))
+
+    def words(self, label: str, say: Callable[[Prospect], str]) -> Row:
+        """Return a row of words."""
+        return Row(label, "", tuple(Cell(say(option), is_number=False) for option in self.all))
+
+
+def range_end(value: float, to_number: Callable[[float], float]) -> str:
+    """Return an end of a range of draws; a payback that never comes reads so.
+
+    Args:
+        value: The end. [unit of the result]
+        to_number: From that unit to the one shown.
+    """
+    return rounded_text(to_number(value)) if math.isfinite(value) else "never"
+
+
+def shown_name(option: Prospect) -> str:
+    """Return the name of an option for a heading: its refrigerant, and whether the plant is kept with repairs."""
+    return f"{option.entry.refrigerant.display_name}{SAME.get(option.deed, '')}"
+
+
+def missing_of(quantity: str) -> Callable[[Prospect], str]:
+    """Return what says what is missing for a quantity of an option."""
+    return lambda option: missing_words(option, quantity)
+
+
+def assumed_text(comparison: Comparison, tables: Sequence[str]) -> str:
+    """Return the defaults taken in some tables of the case, in a sentence; empty if there are none.
+
+    Args:
+        comparison: The result.
+        tables: Names of the tables.
+    """
+    found = [item for item in comparison.case.defaults if item.key.partition(".")[0] in tables]
+    if not found:
+        return ""
+    return plain(f" Assumed, not in the case: {', '.join(f'{item.key} = {item.shown_text}' for item in found)}.")
