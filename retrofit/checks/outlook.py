@@ -132,6 +132,8 @@ def rounded_text(number: float, signed: bool = False) -> str:
         signed: Whether a plus sign stands before it. [-]
     """
     size = abs(number)
+    if size == 0.0:
+        return "0"
     if size >= 1000.0:
         places = DIGITS - 1 - math.floor(math.log10(size))
         return format_number(round(number, min(places, 0)), 0, signed=signed)
@@ -255,12 +257,12 @@ def meter_words(comparison: Comparison, units: UnitSystem) -> str:
     ratio = run.energy_J / year.metered_J
     text = f"Computed for today's plant {energy_text(units, run.energy_J)}, metered {metered}: ratio {ratio:.2f}."
     if abs(ratio - 1.0) > FAR_FROM_METER:
-        limit = f"{FAR_FROM_METER:.0%}"
+        limit = f"{100 * FAR_FROM_METER:.0f}{NBSP}%"
         return (
             f"{text} They are more than {limit} apart: find out what the meter counts, and correct load and "
             "auxiliaries, before the sums are relied on. Nothing is scaled to the meter."
         )
-    return f"{text} A check of the model, within {FAR_FROM_METER:.0%}; nothing is scaled to it."
+    return f"{text} A check of the model, within {100 * FAR_FROM_METER:.0f}{NBSP}%; nothing is scaled to it."
 
 
 # Emissions
@@ -306,7 +308,7 @@ def _paybacks(options: tuple[Prospect, ...]) -> tuple[tuple[str, tuple[str, ...]
 
 PAYBACKS = (
     "within the remaining life",
-    "within it, but by a saving that the model cannot tell from none",
+    "within the remaining life, but by a saving that the model cannot tell from none",
     "not within the remaining life",
     "none, since a year costs no less than with the plant as it is",
     "nothing to pay back",
@@ -457,7 +459,7 @@ def costs_words(comparison: Comparison, units: UnitSystem) -> str:
     parts = [_cost_words(comparison, units, as_is, option) for option in named]
     more = len(others) - len(named)
     if more:
-        parts.append(f"{more} more option{'s' if more > 1 else ''} in the sections on year and money.")
+        parts.append(f"{more} more option{'s' if more > 1 else ''} in the sections on the remaining life.")
     return " ".join(parts)
 
 
@@ -479,24 +481,35 @@ def _cost_words(comparison: Comparison, units: UnitSystem, as_is: Prospect, opti
     parts = [_year_words(year.ratio, year.is_alike, year.missing)]
     if comparison.case.money is not None:
         parts.insert(0, f"first cost {_first_cost_words(comparison, option)}")
-        by = (
-            ", by a saving that the model cannot tell from none" if _payback_group(as_is, option) == PAYBACKS[1] else ""
-        )
-        parts.append(payback_text(option) + by)
+        by = ", by a saving inside the band" if _payback_group(as_is, option) == PAYBACKS[1] else ""
+        parts.append(_payback_briefly(option) + by)
     if warming.ratio is not None:
-        near = ", no meaningful difference" if warming.is_alike else ""
+        near = ": no meaningful difference" if warming.is_alike else ""
         parts.append(f"warming {percent(warming.ratio)}{near}")
     return f"{option.name}: {'; '.join(parts)}."
 
 
 def _year_words(ratio: float | None, is_near: bool, missing: str) -> str:
     if ratio is None:
-        return f"electricity of a year unknown ({missing})"
+        return f"electricity unknown ({missing})"
     more = "less" if ratio < 0.0 else "more"
     if ratio == 0.0:
-        return "the same electricity in a year"
+        return "the same electricity"
     amount = f"{format_number(abs(100.0 * ratio), 0)}{NBSP}%"
-    return f"{amount} {more} electricity in a year{': no meaningful difference' if is_near else ''}"
+    return f"{amount} {more} electricity{': no meaningful difference' if is_near else ''}"
+
+
+def _payback_briefly(option: Prospect) -> str:
+    appraisal = option.account.appraisal
+    payback = None if appraisal is None else appraisal.payback_years
+    if appraisal is None or payback is None:
+        return "payback unknown"
+    if math.isinf(float(payback)):
+        return "no payback"
+    if float(payback) == 0.0:
+        return "nothing to pay back"
+    is_beyond = appraisal.life_years is not None and float(payback) > float(appraisal.life_years)
+    return f"payback {float(payback):.1f} years{', beyond the remaining life' if is_beyond else ''}"
 
 
 def _first_cost_words(comparison: Comparison, option: Prospect) -> str:

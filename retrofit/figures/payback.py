@@ -67,7 +67,7 @@ def _line(comparison: Comparison, axes: Any, option: Prospect) -> tuple[Any, Any
     payback = None if appraisal.payback_years is None else float(appraisal.payback_years)
     if payback and payback <= float(x[-1]):
         axes.plot([payback], [0.0], "o", markersize=8, markerfacecolor="none", markeredgecolor=mark.colour)
-        axes.annotate(f"{payback:.1f}", (payback, 0.0), (0, 6), textcoords="offset points", ha="center", va="bottom",
+        axes.annotate(f"{payback:.1f}", (payback, 0.0), (-5, -5), textcoords="offset points", ha="right", va="top",
                       fontsize=SMALL_PT)  # fmt: skip
     return x, y
 

@@ -16,7 +16,7 @@ from retrofit.units import UnitSystem
 ROW_IN, FRAME_IN = 0.34, 0.78
 MOST = 8
 HEIGHT, PALE = 0.5, 0.3
-LONGEST = 44  # characters of a label
+LONGEST = 48  # characters of a label
 
 
 def tornado_chart(comparison: Comparison, option: Prospect, result: str, units: UnitSystem) -> Drawing | None:
@@ -35,12 +35,12 @@ def tornado_chart(comparison: Comparison, option: Prospect, result: str, units: 
     with canvas(FRAME_IN + ROW_IN * max(3, len(swings)), 2.75, 0.35, 0.26, 0.46) as figure:
         axes = figure.subplots()
         axes.set_ylim(len(swings) - 0.4, -0.6)
-        axes.set_yticks(range(len(swings)), [_label(swing, comparison, units) for swing in swings], fontsize=SMALL_PT)
-        axes.tick_params(axis="y", length=0)
+        axes.set_yticks([])
         axes.spines["left"].set_visible(False)
         base = _number(units, result, swings[0].base)
         for place, swing in enumerate(swings):
             _bar(axes, place, swing, base, units, result)
+            _label(axes, place, swing, units, currency(comparison))
         axes.axvline(base, color=INK, linewidth=THIN)
         axes.annotate(f"base {result_text(comparison, units, result, swings[0].base)}", (base, 1.0), (0, 3),
                       xycoords=("data", "axes fraction"), textcoords="offset points", ha="center", va="bottom",
@@ -85,10 +85,15 @@ def _bar(axes: Any, place: int, swing: Swing, base: float, units: UnitSystem, re
                       ha="left" if side > 0 else "right", fontsize=LABEL_PT)  # fmt: skip
 
 
-def _label(swing: Swing, comparison: Comparison, units: UnitSystem) -> str:
+def _label(axes: Any, place: int, swing: Swing, units: UnitSystem, money: str) -> None:
+    """Name an input and its limits in the left margin."""
     name = input_words(swing)
     short = name if len(name) <= LONGEST else f"{name[: LONGEST - 1].rstrip()}…"
-    return f"{short[:1].upper()}{short[1:]}\n{limits_text(swing, units, currency(comparison))}"
+    texts = (f"{short[:1].upper()}{short[1:]}", limits_text(swing, units, money))
+    for text, up in zip(texts, (1, -1), strict=True):
+        axes.annotate(text, (0.0, place), (-8, up), xycoords=("axes fraction", "data"), textcoords="offset points",
+                      ha="right", va="bottom" if up > 0 else "top", fontsize=SMALL_PT,
+                      annotation_clip=False)  # fmt: skip
 
 
 def limits_text(swing: Swing, units: UnitSystem, money: str) -> str:

@@ -247,7 +247,8 @@ def _load(comparison: Comparison, axes: Any, axis: Axis, x: FloatArray, units: U
     load = units.number("cooling", load_W(comparison.case, T_air, np.ones(T_air.size)))
     at = np.asarray(units.number("temperature", T_air))
     axes.plot(at, load, color=INK, linewidth=THIN, linestyle=(0, (1, 1.5)))
-    axes.annotate("load", (at[-1], load[-1]), (0, -3), textcoords="offset points", ha="center", va="top",
+    place = at.size // 2
+    axes.annotate("load by day", (at[place], load[place]), (4, -3), textcoords="offset points", ha="left", va="top",
                   fontsize=SMALL_PT, style="italic")  # fmt: skip
 
 
@@ -307,6 +308,6 @@ def _ambient_caption(
     return (
         f"What the plant does at full as it gets hotter outside, with {held} at the inlet of the {other}: "
         f"{'heat' if serves == 'heating' else 'cooling'} (above) and discharge temperature (below). The grey band "
-        f"around today's line, ±{band['capacity'].value:.0%} and ±{difference}, is as far as the model can tell two lines "
-        f"apart.{load}{sized}{left_out}"
+        f"around today's line, ±{band['capacity'].value:.0%} and ±{difference}, is as far as the model can tell two "
+        f"lines apart.{load}{sized}{left_out}"
     ).replace("%", "\N{NO-BREAK SPACE}%")

@@ -9,6 +9,7 @@ from dataclasses import dataclass
 from retrofit.case import Report
 from retrofit.case.values import is_hidden
 from retrofit.checks.advice import NOTHING, Advice, Chosen, Condition, Stopped, Weighed, advice, deed
+from retrofit.checks.outlook import costs_words
 from retrofit.report.carried.made_with import group_digests
 from retrofit.report.judging import FAMILY_WORDS, reasons, source_title, spelled
 from retrofit.study import Comparison
@@ -144,8 +145,9 @@ def costs_line(comparison: Comparison, units: UnitSystem) -> str:
         comparison: An assessed result.
         units: The reader's units.
     """
-    why = "the case has no [year]" if comparison.case.year is None else "though the case has a [year]"
-    return f"Not known here: a year's energy and its cost are not computed, {why}. First cost is not computed either."
+    if comparison.life is None:
+        return "Not known here: what a year uses and costs needs [year], [emissions] or [money] in the case."
+    return plain(spelled(costs_words(comparison, units)))
 
 
 def plain(text: str) -> str:

@@ -24,6 +24,7 @@ from retrofit.report.hardware import Hardware, hardware
 from retrofit.report.inputs import Input, LeftOut, Taken, defaults, fixed, inputs, missing
 from retrofit.report.judging import Judged, Shared, judged, spelled, threshold_sources
 from retrofit.report.law import LawPart, law_part
+from retrofit.report.life import LifePart, life_part
 from retrofit.report.plant import WHY_SAME_COOLING, has_plant
 from retrofit.report.practice import Method, jobs, method
 from retrofit.report.provenance import Traced, traced_values
@@ -106,6 +107,7 @@ class Page:
     law: LawPart | None
     method: Method
     commissioning: tuple[Sheet, ...]
+    life: LifePart | None
     portraits: tuple[Portrait, ...]
     inputs: tuple[Input, ...]
     defaults: tuple[Taken, ...]
@@ -174,6 +176,7 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
         law=law_part(comparison, units),
         method=method(comparison, chosen, changes, units),
         commissioning=tuple(found for job in changes for found in sheets(job)),
+        life=life_part(comparison, units),
         portraits=portraits(comparison, axes),
         inputs=inputs(case, units),
         defaults=defaults(case, units),

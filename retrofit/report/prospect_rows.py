@@ -1,4 +1,4 @@
-"""Rows of the tables of the remaining life: a cell for each option, `unknown` with a note where something is missing."""
+"""Rows of the tables of the remaining life: a cell for each option, `unknown` with a note where a datum is missing."""
 
 from __future__ import annotations
 
@@ -52,7 +52,9 @@ class Options:
 
     def unknown(self, option: Prospect, why: str) -> Cell:
         """Return a cell of what is not known, with what is missing in a note if that can be said."""
-        marks = (self.notes.mark(shown_name(option), f"unknown, for want of {spelled(why)}"),) if why else ()
+        price = f"{option.entry.refrigerant.designation} in `refrigerant_price`"
+        text = spelled(why.replace(price, "its price, in `refrigerant_price`"))  # so that options share a note
+        marks = (self.notes.mark(shown_name(option), f"unknown, for want of {text}"),) if why else ()
         return Cell(UNKNOWN, is_number=False, marks=marks)
 
     def changes(self, label: str, quantity: str) -> Row:
@@ -74,21 +76,35 @@ class Options:
 
         return Row(label, "%", tuple(cell(option) for option in self.all))
 
-    def ranges(self, label: str, unit: str, name: str, to_number: Callable[[float], float]) -> Row:
-        """Return a row of ranges in which 8 of 10 draws lie.
+    def ranges(self, label: str, unit: str, name: str, to_number: Callable[[float], float]) -> tuple[Row, Row]:
+        """Return two rows with the ends of the range in which 8 of 10 draws lie.
 
         Args:
             label: What they are.
             unit: Their unit.
             name: Name of the result.
+            to_number: From its unit to that of the rows; it may turn the sign round.
+        """
+        falls = to_number(1.0) < to_number(0.0)
+        return (
+            self.quantiles(f"{label}: 10 % of draws below", unit, name, 2 if falls else 0, to_number),
+            self.quantiles(f"{label}: 90 % of draws below", unit, name, 0 if falls else 2, to_number),
+        )
+
+    def quantiles(self, label: str, unit: str, name: str, place: int, to_number: Callable[[float], float]) -> Row:
+        """Return a row of one of the three quantiles of the draws.
+
+        Args:
+            label: What they are.
+            unit: Their unit.
+            name: Name of the result.
+            place: 0 for 10 per cent, 1 for 50, 2 for 90. [-]
             to_number: From its unit to that of the row.
         """
 
         def cell(option: Prospect) -> Cell:
             found = quantile(option, name)
-            if found is None:
-                return Cell(MISSING)
-            return Cell(f"{range_end(found[0], to_number)} to {range_end(found[2], to_number)}")
+            return Cell(MISSING if found is None else range_end(found[place], to_number))
 
         return Row(label, unit, tuple(cell(option) for option in self.all))
 

@@ -46,6 +46,26 @@ def _has_readings(comparison: Comparison) -> bool:
     return comparison.baseline is not None
 
 
+def _has_life(comparison: Comparison) -> bool:
+    return comparison.life is not None
+
+
+def _has_year(comparison: Comparison) -> bool:
+    return comparison.life is not None and comparison.life.asked is not None
+
+
+def _has_emissions(comparison: Comparison) -> bool:
+    return comparison.life is not None and comparison.case.emissions is not None
+
+
+def _has_money(comparison: Comparison) -> bool:
+    return comparison.life is not None and comparison.case.money is not None
+
+
+def _has_draws(comparison: Comparison) -> bool:
+    return comparison.life is not None and bool(comparison.life.certainty)
+
+
 # A line here and a template of its name make a section. The first one is page one, and stands alone.
 MAIN = (
     Section("answer", "Summary"),
@@ -57,6 +77,10 @@ MAIN = (
     Section("charts", "Charts"),
     Section("hardware", "Hardware"),
     Section("room", "Charge and room", has_room),
+    Section("year", "A year", _has_year),
+    Section("emissions", "Warming", _has_emissions),
+    Section("money", "Money", _has_money),
+    Section("certainty", "How sure", _has_life),
     Section("method", "Method statement"),
     Section("assumptions", "Assumptions"),
     Section("limits", "Limits"),
@@ -67,6 +91,9 @@ ANNEX = (
     Section("components", "Components"),
     Section("room-working", "Room: working", has_room),
     Section("law-rows", "Law: row by row", _has_law),
+    Section("maps", "The year: parts and maps", _has_year),
+    Section("cost-items", "First cost, item by item", _has_money),
+    Section("draws", "What may be off, and by how much", _has_draws),
     Section("states", "State points"),
     Section("commissioning", "Commissioning sheets"),
     Section("inputs", "Inputs"),

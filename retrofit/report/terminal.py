@@ -44,7 +44,7 @@ def comparison_text(comparison: Comparison, units: UnitSystem, columns: int, str
     parts = [
         _head(comparison, units, columns, strong),
         _answer(found, columns),
-        *_cautions(comparison, columns, strong),
+        *cautions_text(comparison, columns, strong),
         baseline_text(comparison, units, columns, strong),
         *_tables(comparison, units, columns, strong),
         _findings(comparison, columns, strong),
@@ -78,7 +78,14 @@ def _answer(found: Answer, columns: int) -> str:
     return "\n".join(lines)
 
 
-def _cautions(comparison: Comparison, columns: int, strong: Emphasis) -> list[str]:
+def cautions_text(comparison: Comparison, columns: int, strong: Emphasis) -> list[str]:
+    """Return the cautions as one block, each with the refrigerants it is about.
+
+    Args:
+        comparison: The result.
+        columns: Width to wrap prose to. [characters]
+        strong: How a heading is set off.
+    """
     by_caution: dict[Caution, list[str]] = {}
     for entry in comparison.entries:
         for caution in entry.cautions:

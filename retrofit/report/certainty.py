@@ -1,0 +1,269 @@
+"""How sure the numbers are, in the report: probabilities, quantiles, what moves them, and how the draws are made."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+
+from retrofit.checks.outlook import KG_PER_T, TOLD, currency, result_text, rounded_text
+from retrofit.checks.prospects import Prospect, life_of_result, probability, quantile, ranked
+from retrofit.figures.tornado import limits_text
+from retrofit.report.front import plain
+from retrofit.report.judging import spelled
+from retrofit.report.prospect_rows import Options, missing_of, shown_name
+from retrofit.report.table import Cell, Group, Row, Table
+from retrofit.study import Comparison
+from retrofit.study.ranking import MEANING, SCALE
+from retrofit.study.uncertain import Uncertain
+from retrofit.units import MISSING, UnitSystem, format_number
+
+ORIGINS = {"case": "the case", "assumed": "assumed", "model": "the model"}
+PROBABILITIES = (
+    ("carries the cooling needed", "carries"),
+    ("uses less electricity in a year", "uses_less"),
+    ("costs less over the remaining life", "cheaper"),
+    ("warms less over the remaining life", "cleaner"),
+)
+RESTS_ON = {"uses_less": "energy", "cheaper": "cost", "cleaner": "emissions"}
+GUIDE = (
+    "as the Guide to the expression of uncertainty in measurement (JCGM 100:2008, 4.3.7) takes where only the limits "
+    "are known"
+)
+
+
+def certainty_table(comparison: Comparison, options: Options) -> Table | None:
+    """Return the table of probabilities; None without draws.
+
+    Args:
+        comparison: A result with its remaining life.
+        options: The options.
+    """
+    life = life_of_result(comparison)
+    if not life.certainty:
+        return None
+    rows = tuple(
+        Row(label, "%", tuple(_share(options, option, name) for option in options.all)) for label, name in PROBABILITIES
+    )
+    groups = (Group("shares", f"Share of {life.draws} draws in which an option …", rows),)
+    basis = (
+        "Basis: all inputs that may be off drawn together, every option with the same draws; against the plant as it "
+        "is. The cooling needed is that of the design point, on the existing plant."
+    )
+    return Table("certainty", "How sure it is", basis, options.names, groups, options.notes.listed())
+
+
+def _share(options: Options, option: Prospect, name: str) -> Cell:
+    value = probability(option, name)
+    if option is options.all[0] and name != "carries":
+        return Cell(MISSING)
+    if value is None and name == "carries" and option.account.plan.family == "replace" and option.certainty:
+        mark = options.notes.mark(shown_name(option), "a new plant is sized to carry what is needed")
+        return Cell("sized for it", is_number=False, marks=(mark,))
+    if value is None:
+        return options.unknown(option, missing_of(RESTS_ON.get(name, "energy"))(option))
+    whole = round(100.0 * value)
+    edge = "<" if whole == 0 and value > 0.0 else ">" if whole == 100 and value < 1.0 else ""
+    return Cell({"<": "< 1", ">": "> 99"}.get(edge, str(whole)))
+
+
+def spans(comparison: Comparison, options: Options, units: UnitSystem) -> Table | None:
+    """Return the quantiles of every result that a reader may want; None without draws.
+
+    Args:
+        comparison: A result with its remaining life.
+        options: The options.
+        units: The reader's units.
+    """
+    groups = []
+    for name, label, unit, to_number in _results(comparison, units):
+        if not any(quantile(option, name) for option in options.all):
+            continue
+        rows = tuple(
+            options.quantiles(f"{percent} % of draws below", unit, name, place, to_number)
+            for place, percent in enumerate((10, 50, 90))
+        )
+        groups.append(Group(name.replace("_", "-").lower(), label, rows))
+    if not groups:
+        return None
+    caption = "What 10, 50 and 90 per cent of the draws stay below"
+    basis = "Basis: the same draws for every option; design point, existing plant, where no year is named."
+    return Table("spans", caption, basis, options.names, tuple(groups), options.notes.listed())
+
+
+Number = Callable[[float], float]
+
+
+def _results(comparison: Comparison, units: UnitSystem) -> tuple[tuple[str, str, str, Number], ...]:
+    """Return name, heading, unit and conversion of each result."""
+    money = currency(comparison)
+
+    def as_shown(kind: str) -> tuple[str, Number]:
+        return units.label(kind), lambda value: float(units.number(kind, value))
+
+    def as_is(value: float) -> float:
+        return value
+
+    return (
+        ("cooling_W", "Cooling at full", *as_shown("cooling")),
+        ("cop", "COP at today's cooling", "", as_is),
+        ("T_discharge_K", "Discharge temperature at full", *as_shown("temperature")),
+        ("energy_J", "Electricity of a year", *as_shown("energy")),
+        ("energy_saving_J", "Electricity saved in a year", *as_shown("energy")),
+        ("tewi_kg", "Warming over the remaining life", "t CO2e", lambda value: value / KG_PER_T),
+        ("avoided_t", "CO2e avoided over the remaining life", "t CO2e", as_is),
+        ("first_cost", "First cost", money, as_is),
+        ("yearly_saving", "Yearly saving", money, as_is),
+        ("payback_years", "Simple payback", "years", as_is),
+        ("npv", "Net present value", money, as_is),
+        ("life_saving", "Saved over the remaining life, first cost paid", money, as_is),
+        ("cost_per_t", "Cost of a tonne of CO2e avoided", f"{money}/t", as_is),
+    )
+
+
+@dataclass(frozen=True)
+class Drawn:
+    """An input that may be off: key, what it is, value and limits as texts, origin, and why."""
+
+    key: str
+    name: str
+    value: str
+    low: str
+    high: str
+    unit: str
+    shape: str
+    origin: str
+    why: str
+
+
+def drawn_inputs(comparison: Comparison, units: UnitSystem) -> tuple[Drawn, ...]:
+    """Return every input that may be off with its limits and where they come from.
+
+    Args:
+        comparison: A result with its remaining life.
+        units: The reader's units.
+    """
+    money = currency(comparison)
+    return tuple(_drawn(item, units, money) for item in life_of_result(comparison).inputs)
+
+
+def _drawn(item: Uncertain, units: UnitSystem, money: str) -> Drawn:
+    low, base, high = item.spread
+    if item.kind:
+        decimals = 1 if item.kind == "fraction" else None
+        texts = [units.text(item.kind, value, decimals=decimals) for value in (base, low, high)]
+        unit = units.label(item.kind)
+    else:
+        texts, unit = [rounded_text(value) for value in (base, low, high)], money
+    shape = "triangular" if item.is_triangular else "rectangular"
+    base_text, low_text, high_text = texts
+    name, origin = plain(spelled(item.name)), ORIGINS[item.origin]
+    return Drawn(item.key, name, base_text, low_text, high_text, unit, shape, origin, spelled(item.why))
+
+
+@dataclass(frozen=True)
+class Moved:
+    """What moves a result of an option most: each input with its limits and the result at both."""
+
+    option: str
+    result: str
+    base: str
+    inputs: tuple[tuple[str, str, str, str], ...]
+
+
+MOST_TOLD, MOST_RESULTS = 5, 2
+
+
+def moved(comparison: Comparison, options: Options, units: UnitSystem) -> tuple[Moved, ...]:
+    """Return what moves the results of every option most.
+
+    Args:
+        comparison: A result with its remaining life.
+        options: The options.
+        units: The reader's units.
+    """
+    found, money = [], currency(comparison)
+    for option in options.all[1:]:
+        known = option.certainty.swings if option.certainty else {}
+        for name in [name for name in TOLD if known.get(name)][:MOST_RESULTS]:
+            swings = known[name][:MOST_TOLD]
+            rows = tuple(
+                (
+                    plain(spelled(swing.input.name)),
+                    limits_text(swing, units, money),
+                    result_text(comparison, units, name, swing.at_low),
+                    result_text(comparison, units, name, swing.at_high),
+                )
+                for swing in swings
+            )
+            base = result_text(comparison, units, name, swings[0].base)
+            found.append(Moved(shown_name(option), TOLD[name], base, rows))
+    return tuple(found)
+
+
+def method(comparison: Comparison) -> tuple[str, ...]:
+    """Return how the draws are made, paragraph by paragraph.
+
+    Args:
+        comparison: A result with its remaining life.
+    """
+    life = life_of_result(comparison)
+    if not life.certainty:
+        return ("No draws were made: only base values stand here, and nothing is said of how sure they are.",)
+    solved = {name: found.solved for name, found in life.certainty.items() if found.solved < 1.0}
+    unsolved = "; ".join(f"{spelled(name)} {format_number(100.0 * value, 1)}" for name, value in solved.items())
+    share = (
+        f"A draw without a solution is in none of the numbers; solved were, in % of the draws: {unsolved}, all of the "
+        "others." if solved else "Every draw has a solution."
+    )  # fmt: skip
+    return (
+        "A draw is one set of values of all inputs that may be off, each taken at random within its limits, and the "
+        f"whole plant computed with it: design point, year, emissions and money. {life.draws} draws were made with seed "
+        f"{life.seed}; the same seed gives the same numbers. They are a Latin hypercube: of each input every one of "
+        f"{life.draws} equal shares of its distribution is taken once. Every option meets the same draws, so that what "
+        "they have in common cancels where they are compared.",
+        "An input with a plus or minus lies anywhere within it, nowhere more likely than elsewhere: a rectangular "
+        f"distribution, {GUIDE}. One with low, base and high is triangular about its base. Inputs are taken as "
+        "independent of each other. The limits themselves are estimates: measure what moves the answer most.",
+        "What the model may be wrong by is an input too: a factor on capacity and on COP of each candidate against "
+        "today's refrigerant, within the band of the model. The year of a draw comes from a map of the plant made for "
+        f"that draw, brought to the year balanced hour by hour at the base. {share}",
+    )
+
+
+@dataclass(frozen=True)
+class Weights:
+    """The ranking under even weights: rows of option, place, score, shares first and first alone; what it rests on."""
+
+    rows: tuple[tuple[str, str, str, str, str, str], ...]
+    criteria: tuple[tuple[str, str], ...]
+    not_ranked: tuple[tuple[str, str], ...]
+    left_out: tuple[str, ...]
+    scale: str
+
+
+def weights(comparison: Comparison) -> Weights:
+    """Return which option comes first by even weights, what it rests on, and what a gate stops.
+
+    Args:
+        comparison: An assessed result with its remaining life.
+    """
+    found, names = ranked(comparison), _display_names(comparison)
+    order, stability = found.order, found.stability
+    rows = []
+    for name, place, total in zip(order.names, order.places, order.totals, strict=True):
+        at = found.scores.names.index(name)
+        first, alone = (stability.first[at], stability.alone[at]) if stability else (0.0, 0.0)
+        missing = ", ".join(found.scores.unknown.get(name, ())) or MISSING
+        numbers = (format_number(total, 2), format_number(100.0 * first, 0), format_number(100.0 * alone, 0))
+        rows.append((names[name], str(place), *numbers, missing))
+    return Weights(
+        tuple(rows) if stability else (),
+        tuple(zip(found.scores.criteria, found.scores.measures, strict=True)),
+        tuple((names[name], spelled(why)) for name, why in found.scores.not_ranked.items()),
+        found.scores.left_out,
+        f"{SCALE[:1].upper()}{SCALE[1:]}. An equal place means {MEANING}.",
+    )
+
+
+def _display_names(comparison: Comparison) -> dict[str, str]:
+    return {entry.refrigerant.designation: entry.refrigerant.display_name for entry in comparison.entries}
