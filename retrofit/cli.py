@@ -33,6 +33,7 @@ CASE = click.Path(path_type=Path)
 OWN_NAME = Path()  # stands for the case's name with the ending of the form
 READ_WITH = {"html": " Open it in a browser; print it from there for paper or PDF.", "pdf": "", "xlsx": ""}
 WIDEST_PROSE = 100
+MOST_DRAWS, MOST_SEED = 20_000, 2**32 - 1
 INTERRUPTED = 128 + 2  # by the custom of shells: 128 and the number of the signal
 # What stands for a sign that the encoding of a stream has no place for; a minus must never get lost.
 PLAIN = {
@@ -128,6 +129,16 @@ def _compared(case_file: Path, on: datetime | None) -> Comparison:
     return assess(compare_case(read_case(case_file), _say_build), on.date() if on else None)
 
 
+def _with_life_if_asked(comparison: Comparison) -> Comparison:
+    """Return a result with the remaining life if its case asks for any of it."""
+    case = comparison.case
+    if case.year is None and case.emissions is None and case.money is None:
+        return comparison
+    from retrofit.study.life import with_life
+
+    return with_life(comparison)
+
+
 def _print_json(value: object) -> None:
     click.echo(json.dumps(value, indent=1, allow_nan=False))
 
@@ -164,6 +175,7 @@ def main() -> None:
     \b
     retrofit new plant.toml         start a case file
     retrofit compare plant.toml     compare the candidates in the terminal
+    retrofit year plant.toml        tell a year, its warming and its money
     retrofit report plant.toml      write the report: HTML, PDF, spreadsheet
     retrofit rerun plant.html       compute a report again
     retrofit meeting plant.toml     open a page to change it together
@@ -233,6 +245,30 @@ def compare(case_file: Path, units: str, as_json: bool, as_csv: bool, on: dateti
 
 @main.command()
 @click.argument("case_file", type=CASE, metavar="CASE")
+@units_option
+@json_option
+@click.option("--draws", type=click.IntRange(0, MOST_DRAWS), default=1000, show_default=True, help="Draws of the inputs.")
+@click.option("--seed", type=click.IntRange(0, MOST_SEED), default=1, show_default=True, help="What the draws follow from.")
+@on_option
+@_guarded
+def year(case_file: Path, units: str, as_json: bool, draws: int, seed: int, on: datetime | None) -> None:
+    """Tell year, warming, money and how sure they are of every option of a CASE."""
+    from retrofit.study.life import with_life
+
+    comparison = with_life(_compared(case_file, on), draws, seed)
+    if as_json:
+        from retrofit.report.machine_year import year_json
+
+        _print_json(year_json(comparison))
+    else:
+        from retrofit.report.terminal_year import year_text
+        from retrofit.units import UNIT_SYSTEMS
+
+        click.echo(year_text(comparison, UNIT_SYSTEMS[units], _columns(), _strong()))
+
+
+@main.command()
+@click.argument("case_file", type=CASE, metavar="CASE")
 @click.option("-o", "--output", type=CASE, help="HTML file to write; the case's name with .html if left out.")
 @_form_option("--pdf", "Write a PDF; its name, or the case's with .pdf. Without -o no HTML then.")
 @_form_option("--xlsx", "Write a spreadsheet; its name, or the case's with .xlsx. Without -o no HTML then.")
@@ -255,7 +291,7 @@ def report(
 
     paths = _report_paths(case_file, {"html": output, "pdf": pdf, "xlsx": xlsx})
     require(paths)
-    comparison = _compared(case_file, on)
+    comparison = _with_life_if_asked(_compared(case_file, on))
     contents = render_forms(paths, comparison, units, templates, made_at=datetime.now().astimezone())
     for form, path in paths.items():
         write_whole(path, contents[form])
