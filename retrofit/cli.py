@@ -247,8 +247,20 @@ def compare(case_file: Path, units: str, as_json: bool, as_csv: bool, on: dateti
 @click.argument("case_file", type=CASE, metavar="CASE")
 @units_option
 @json_option
-@click.option("--draws", type=click.IntRange(0, MOST_DRAWS), default=1000, show_default=True, help="Draws of the inputs.")
-@click.option("--seed", type=click.IntRange(0, MOST_SEED), default=1, show_default=True, help="What the draws follow from.")
+@click.option(
+    "--draws",
+    type=click.IntRange(0, MOST_DRAWS),
+    default=1000,
+    show_default=True,
+    help="Draws of the inputs; 0 for none.",
+)
+@click.option(
+    "--seed",
+    type=click.IntRange(0, MOST_SEED),
+    default=1,
+    show_default=True,
+    help="The same seed gives the same draws.",
+)
 @on_option
 @_guarded
 def year(case_file: Path, units: str, as_json: bool, draws: int, seed: int, on: datetime | None) -> None:

@@ -58,6 +58,7 @@ class Outlook:
         meter: The computed year against the meter; empty if the case has none.
         swing: What moves the answer most; empty without draws.
         ranking: Which option comes first under even weights, sentence by sentence.
+        stopped: Which options a check stops, whatever their numbers here; empty if none.
     """
 
     year: tuple[Matter, ...]
@@ -67,6 +68,7 @@ class Outlook:
     meter: str
     swing: str
     ranking: tuple[str, ...]
+    stopped: str
 
     @property
     def matters(self) -> tuple[Matter, ...]:
@@ -90,11 +92,24 @@ def outlook(comparison: Comparison, units: UnitSystem) -> Outlook:
         meter=meter_words(comparison, units),
         swing=swing_words(comparison, units),
         ranking=ranking_words(ranked(comparison)),
+        stopped=_stopped(comparison),
     )
 
 
 def _there(*matters: Matter) -> tuple[Matter, ...]:
     return tuple(matter for matter in matters if matter.groups)
+
+
+def _stopped(comparison: Comparison) -> str:
+    """Return which options a check stops: their numbers stand beside the others' all the same."""
+    found = [
+        f"{entry.refrigerant.designation} ({stops[0].title})"
+        for entry in comparison.entries
+        if (stops := [finding for finding in entry.findings if finding.level == "stop"])
+    ]
+    if not found:
+        return ""
+    return f"A check stops {listed(found, 'and')}: what stands here for it is no proposal, whatever the numbers."
 
 
 # Numbers as words
@@ -209,7 +224,7 @@ def _energy(options: tuple[Prospect, ...], units: UnitSystem) -> Matter:
 
 
 def _within() -> str:
-    return f"within the band of the model, ±{model_band()['cop'].value:.0%} or its own wider one"
+    return f"within the band of the model, ±{100 * model_band()['cop'].value:.0f}{NBSP}% or its own wider one"
 
 
 def _alike(options: Sequence[Prospect], quantity: str) -> Matter:
@@ -431,15 +446,23 @@ def ranking_words(found: Ranked) -> tuple[str, ...]:
     """
     if found.stability is None:
         return ("No option can be ranked: a gate stops each, or none of the criteria is known.",)
+    if len(found.scores.names) == 1:
+        return (f"Only {found.scores.names[0]} can be ranked.", *_gates(found))
     first = [name for name, place in zip(found.order.names, found.order.places, strict=True) if place == 1]
     tie = ", no meaningful difference among them" if len(first) > 1 else ""
     sentences = [f"With even weights {listed(first, 'and')} come{'' if tie else 's'} first{tie}."]
     sentences.append(stability_words(found.scores, found.stability))
     if found.flip is not None:
         sentences.append(found.flip.words)
-    elif len(found.scores.names) > 1:
+    else:
         sentences.append("No change of a single weight puts another option first by more than the band.")
-    return tuple(sentences)
+    return (*sentences, *_gates(found))
+
+
+def _gates(found: Ranked) -> tuple[str, ...]:
+    """Return which options are not ranked, and the gate of each."""
+    gates = "; ".join(f"{name} ({why})" for name, why in found.scores.not_ranked.items())
+    return (f"Not ranked, whatever the weights: {gates}.",) if gates else ()
 
 
 # Page one

@@ -13,9 +13,10 @@ from retrofit.report.judging import spelled
 from retrofit.report.prospect_rows import Options, missing_of, shown_name
 from retrofit.report.table import Cell, Group, Row, Table
 from retrofit.study import Comparison
+from retrofit.study.life import Life
 from retrofit.study.ranking import MEANING, SCALE
 from retrofit.study.uncertain import Uncertain
-from retrofit.units import MISSING, UnitSystem, format_number
+from retrofit.units import MISSING, UnitSystem, format_number, listed
 
 ORIGINS = {"case": "the case", "assumed": "assumed", "model": "the model"}
 PROBABILITIES = (
@@ -209,25 +210,31 @@ def method(comparison: Comparison) -> tuple[str, ...]:
     life = life_of_result(comparison)
     if not life.certainty:
         return ("No draws were made: only base values stand here, and nothing is said of how sure they are.",)
-    solved = {name: found.solved for name, found in life.certainty.items() if found.solved < 1.0}
-    unsolved = "; ".join(f"{spelled(name)} {format_number(100.0 * value, 1)}" for name, value in solved.items())
-    share = (
-        f"A draw without a solution is in none of the numbers; solved were, in % of the draws: {unsolved}, all of the "
-        "others." if solved else "Every draw has a solution."
-    )  # fmt: skip
     return (
         "A draw is one set of values of all inputs that may be off, each taken at random within its limits, and the "
-        f"whole plant computed with it: design point, year, emissions and money. {life.draws} draws were made with seed "
-        f"{life.seed}; the same seed gives the same numbers. They are a Latin hypercube: of each input every one of "
-        f"{life.draws} equal shares of its distribution is taken once. Every option meets the same draws, so that what "
+        f"whole plant computed with it: design point, year, emissions and money. {life.draws} draws were made with "
+        f"seed {life.seed}; the same seed gives the same numbers. They are a Latin hypercube: of each input every "
+        f"one of {life.draws} equal shares of its distribution is taken once. Every option meets the same draws, so that what "
         "they have in common cancels where they are compared.",
         "An input with a plus or minus lies anywhere within it, nowhere more likely than elsewhere: a rectangular "
         f"distribution, {GUIDE}. One with low, base and high is triangular about its base. Inputs are taken as "
         "independent of each other. The limits themselves are estimates: measure what moves the answer most.",
         "What the model may be wrong by is an input too: a factor on capacity and on COP of each candidate against "
         "today's refrigerant, within the band of the model. The year of a draw comes from a map of the plant made for "
-        f"that draw, brought to the year balanced hour by hour at the base. {share}",
+        f"that draw, brought to the year balanced hour by hour at the base. {_solved(life)}",
     )
+
+
+def _solved(life: Life) -> str:
+    """Return in a sentence which share of the draws has a solution."""
+    shares = {name: found.solved for name, found in life.certainty.items()}
+    if min(shares.values()) == 1.0:
+        return "Every draw has a solution."
+    if len(set(shares.values())) == 1:
+        told = f"{format_number(100.0 * min(shares.values()), 1)} % of the draws, with every option"
+    else:
+        told = f"of {listed([f'{name} {format_number(100.0 * share, 1)} %' for name, share in shares.items()], 'and')}"
+    return f"Solved were {told}; a draw without a solution is in none of the numbers."
 
 
 @dataclass(frozen=True)
@@ -236,7 +243,6 @@ class Weights:
 
     rows: tuple[tuple[str, str, str, str, str, str], ...]
     criteria: tuple[tuple[str, str], ...]
-    not_ranked: tuple[tuple[str, str], ...]
     left_out: tuple[str, ...]
     scale: str
 
@@ -259,7 +265,6 @@ def weights(comparison: Comparison) -> Weights:
     return Weights(
         tuple(rows) if stability else (),
         tuple(zip(found.scores.criteria, found.scores.measures, strict=True)),
-        tuple((names[name], spelled(why)) for name, why in found.scores.not_ranked.items()),
         found.scores.left_out,
         f"{SCALE[:1].upper()}{SCALE[1:]}. An equal place means {MEANING}.",
     )

@@ -42,6 +42,7 @@ class LifePart:
     Attributes:
         year_words, emissions_words, money_words, certainty_words: Matters, each a heading with groups of words and
             the options they are true of.
+        stopped: Which options a check stops; empty if none.
         meter, swing: The meter, and what moves the answer most; empty if there is none.
         ranking: Sentences on which option comes first.
         year, emissions, money, certainty: Tables; None without what they need.
@@ -61,6 +62,7 @@ class LifePart:
     emissions_words: Told
     money_words: Told
     certainty_words: Told
+    stopped: str
     meter: str
     swing: str
     ranking: tuple[str, ...]
@@ -110,6 +112,7 @@ def life_part(comparison: Comparison, units: UnitSystem) -> LifePart | None:
         emissions_words=_told(words.emissions),
         money_words=_told(words.money),
         certainty_words=_told(words.certainty),
+        stopped=spelled(words.stopped),
         meter=words.meter,
         swing=spelled(plain(words.swing)),
         ranking=tuple(spelled(text) for text in words.ranking),
@@ -128,7 +131,7 @@ def life_part(comparison: Comparison, units: UnitSystem) -> LifePart | None:
         spans=spans(comparison, options(), units),
         inputs=drawn_inputs(comparison, units),
         moved=moved(comparison, options(), units),
-        method=method(comparison),
+        method=tuple(spelled(text) for text in method(comparison)),
         weights=weights(comparison),
         left_out=left_out(comparison) if life.accounts else (),
         tewi_formula=FORMULA,

@@ -34,7 +34,9 @@ from retrofit.units import SI
 
 SCHEMA = "retrofit.year/1"
 NEVER = "never: a year costs no less than with the plant as it is"
-NUMBERS = [item.name for item in fields(YearRun) if item.name not in ("machine", "reason", "monthly_J", "by_air", "map")]
+NUMBERS = [
+    item.name for item in fields(YearRun) if item.name not in ("machine", "reason", "monthly_J", "by_air", "map")
+]
 # Results by their name here; what is money carries the word currency, what is a time in years or hours keeps its own.
 RENAMED = {
     "first_cost": "first_cost_currency",
@@ -77,6 +79,7 @@ def year_json(comparison: Comparison) -> dict[str, Any]:
         "options": [_option(comparison, options[0], option) for option in options],
         "ranking": _ranking(comparison),
         "answer": [matter.text for matter in words.matters],
+        "stopped": words.stopped or None,
         "meter": words.meter or None,
         "what_moves_most": words.swing or None,
         "assumed": [asdict(item) for item in case.defaults if item.key.partition(".")[0] in TABLES],
@@ -270,7 +273,7 @@ def _certainty(option: Prospect) -> dict[str, Any] | None:
 def _quantiles(found: Certainty) -> Mapping[str, Any]:
     result: dict[str, Any] = {}
     for name, values in found.quantiles.items():
-        ends = {key: _amount(name, getattr(values, key)) for key in ("p10", "p50", "p90")}
+        ends: dict[str, Any] = {key: _amount(name, getattr(values, key)) for key in ("p10", "p50", "p90")}
         if name == "payback_years":
             ends |= {f"{key}_words": NEVER for key in ("p10", "p50", "p90") if math.isinf(getattr(values, key))}
         result[RENAMED.get(name, name)] = ends

@@ -16,6 +16,10 @@ from retrofit.study import Comparison
 from retrofit.units import MISSING
 
 Read = Callable[[Prospect], float | None]
+# Results that the plant as it is has against itself.
+AGAINST_AS_IS = (
+    "energy_saving_J", "avoided_t", "first_cost", "yearly_saving", "payback_years", "npv", "life_saving", "cost_per_t",
+)  # fmt: skip
 SAME = {"as it is": "", "kept, with its repairs": " kept"}
 
 
@@ -104,7 +108,8 @@ class Options:
 
         def cell(option: Prospect) -> Cell:
             found = quantile(option, name)
-            return Cell(MISSING if found is None else range_end(found[place], to_number))
+            is_itself = option is self.all[0] and name in AGAINST_AS_IS
+            return Cell(MISSING if found is None or is_itself else range_end(found[place], to_number))
 
         return Row(label, unit, tuple(cell(option) for option in self.all))
 

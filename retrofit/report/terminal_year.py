@@ -1,4 +1,4 @@
-"""The remaining life as text for a terminal: the answer, year, emissions, money, how sure it is, and what is missing."""
+"""The remaining life as text for a terminal: answer, year, emissions, money, how sure it is, and what is missing."""
 
 from __future__ import annotations
 
@@ -10,7 +10,6 @@ from retrofit.checks.outlook import (
     KG_PER_T,
     TOLD,
     UNKNOWN,
-    Outlook,
     currency,
     outlook,
     percent,
@@ -58,7 +57,7 @@ def year_text(comparison: Comparison, units: UnitSystem, columns: int, strong: E
     parts = [
         strong(shown(comparison.case.title, 200)),
         *(_matters(matters, columns) for matters in (words.year, words.emissions, words.money)),
-        _prose(words, columns),
+        "\n".join(paragraph(text, columns) for text in (words.stopped, words.meter, words.swing) if text),
         *cautions_text(comparison, columns, strong),
         _year(comparison, options, units, columns, strong),
         _emissions(comparison, options, units, columns, strong),
@@ -80,10 +79,6 @@ def _matters(matters: Sequence[Matter], columns: int) -> str:
             for words, names in matter.groups
         ]
     return "\n".join(lines)
-
-
-def _prose(words: Outlook, columns: int) -> str:
-    return "\n".join(paragraph(text, columns) for text in (words.meter, words.swing) if text)
 
 
 def _table(options: Sequence[Prospect], cells: Sequence[Cells]) -> str:
@@ -114,7 +109,7 @@ def _change(as_is: Prospect, options: Sequence[Prospect], quantity: str) -> list
 
 def _span(options: Sequence[Prospect], name: str, to_number: Callable[[float], float]) -> list[Cells]:
     """Return columns with the ends of the range in which 8 of 10 draws lie; none without draws."""
-    found = [quantile(option, name) for option in options]
+    found = [None if name == "life_saving" and option is options[0] else quantile(option, name) for option in options]
     if not any(found):
         return []
     ends = ((0, "10 % of"), (2, "90 % of"))
@@ -180,7 +175,8 @@ def _year_notes(options: Sequence[Prospect]) -> Iterator[str]:
         if option.year is None:
             yield f"{option.name} has no year: {option.no_year}."
         elif option.year.not_solved_h:
-            yield f"{option.name}: {_hours(option.year)} without a solution, counted as unmet: {option.year.reason}."
+            why = f": {option.year.reason}" if option.year.reason else ""
+            yield f"{option.name}: {_hours(option.year)} without a solution, counted as unmet{why}."
 
 
 def _hours(year: YearRun) -> str:
@@ -262,7 +258,10 @@ def _money(comparison: Comparison, options: Sequence[Prospect], columns: int, st
         cells.insert(5, (Column("NPV", unit), [_signed(as_is, option, "cost", _npv(option)) for option in options]))
     heading = strong(f"Money in {unit}, prices as today, against the plant as it is")
     notes = list(dict.fromkeys(_money_notes(options)))
-    note = "A year: the parts known. Over the life: what it costs more, first cost included; draws: what it saves."
+    note = (
+        "A year: the parts known. Over the life: what it costs more, first cost included; draws: what it saves. "
+        "Below 0 per t: it saves money too."
+    )
     return "\n".join([heading, _table(options, cells), *(paragraph(text, columns) for text in (note, *notes))])
 
 
@@ -311,21 +310,25 @@ def _per_tonne(as_is: Prospect, option: Prospect) -> str:
 
 
 def _money_notes(options: Sequence[Prospect]) -> Iterator[str]:
-    unknown: dict[str, list[str]] = {}
+    """Yield what is not counted or not known, with the options it is true of."""
+    found: dict[str, list[str]] = {}
     for option in options[1:]:
-        saving, first = option.account.saving, option.account.first_cost
-        parts = [part.partition(" (")[0] for part in saving.not_counted] if saving else []
-        if parts:
-            unknown.setdefault(f"Not counted in the saving, not known on both sides: {', '.join(parts)}", []).append(
-                option.name
-            )
-        if first is not None and first.not_counted:
-            names = ", ".join(name[:1].lower() + name[1:] for name in first.not_counted)
-            unknown.setdefault(f"No sum given, so not counted in the first cost: {names}", []).append(option.name)
-        if missing := missing_words(option, "cost"):
-            unknown.setdefault(f"Unknown for want of {missing}", []).append(option.name)
-    for text, names in unknown.items():
+        for text in _left_open(option):
+            found.setdefault(text, []).append(option.name)
+    for text, names in found.items():
         yield f"{text} ({', '.join(names)})."
+
+
+def _left_open(option: Prospect) -> Iterator[str]:
+    saving, first = option.account.saving, option.account.first_cost
+    if saving is not None and saving.not_counted:
+        parts = ", ".join(part.partition(" (")[0] for part in saving.not_counted)
+        yield f"Not counted in the saving, not known on both sides: {parts}"
+    if first is not None and first.not_counted:
+        parts = ", ".join(name[:1].lower() + name[1:] for name in first.not_counted)
+        yield f"No sum given, so not counted in the first cost: {parts}"
+    if missing := missing_words(option, "cost"):
+        yield f"Unknown for want of {missing}"
 
 
 # How sure

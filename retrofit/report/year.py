@@ -30,8 +30,8 @@ def year_basis(comparison: Comparison, units: UnitSystem) -> str:
     return plain(
         "Basis: the plant as installed over a year, every hour balanced for itself, pressures floating; "
         f"{HEATED[asked.serves]} to deliver {_energy(units, asked.load_J)} {units.label('energy')}, with what "
-        f"defrosting adds. Weather: {asked.source}. A new plant is sized for today's cooling at the same exchangers, or "
-        f"goes by the seasonal COP of its maker.{assumed_text(comparison, ('year',))}"
+        f"defrosting adds. Weather: {asked.source}. A new plant is sized for today's cooling at the same exchangers, "
+        f"or goes by the seasonal COP of its maker.{assumed_text(comparison, ('year',))}"
     )
 
 
@@ -114,7 +114,9 @@ def year_parts(comparison: Comparison, options: Options, units: UnitSystem) -> T
     ]
     for option in options.all:
         if option.year and option.year.not_solved_h:
-            options.notes.mark(option.entry.refrigerant.display_name, f"hours without a solution: {option.year.reason}")
+            why = f": {option.year.reason}" if option.year.reason else ""
+            text = f"hours without a solution count as unmet{why}"
+            options.notes.mark(option.entry.refrigerant.display_name, text)
     groups = (Group("parts", "Basis: same plant, the same year as in the main part", tuple(rows)),)
     basis = year_basis(comparison, units)
     return Table("year-parts", "Parts of a year", basis, options.names, groups, options.notes.listed())
