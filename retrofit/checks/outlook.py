@@ -102,14 +102,15 @@ def _there(*matters: Matter) -> tuple[Matter, ...]:
 
 def _stopped(comparison: Comparison) -> str:
     """Return which options a check stops: their numbers stand beside the others' all the same."""
-    found = [
-        f"{entry.refrigerant.designation} ({stops[0].title})"
-        for entry in comparison.entries
-        if (stops := [finding for finding in entry.findings if finding.level == "stop"])
-    ]
+    found: dict[str, list[str]] = {}
+    for entry in comparison.entries:
+        stops = [finding.title for finding in entry.findings if finding.level == "stop"]
+        if stops:
+            found.setdefault(stops[0], []).append(entry.refrigerant.designation)
     if not found:
         return ""
-    return f"A check stops {listed(found, 'and')}: what stands here for it is no proposal, whatever the numbers."
+    told = "; ".join(f"{listed(names, 'and')} ({title})" for title, names in found.items())
+    return f"A check stops {told}: what stands here for them is no proposal, whatever the numbers."
 
 
 # Numbers as words
@@ -206,11 +207,17 @@ def _by_difference(
     for option in options[1:]:
         change = difference(options[0], option, quantity)
         if change.amount is None:
-            found.setdefault(f"unknown, for want of {change.missing}", []).append(option.name)
+            found.setdefault(_unknown(option, change.missing), []).append(option.name)
         else:
             where = near if change.is_alike else less if change.amount < 0.0 else more
             found[where].append(f"{option.name} {amount(option)}")
     return tuple((heading, tuple(names)) for heading, names in found.items() if names)
+
+
+def _unknown(option: Prospect, missing: str) -> str:
+    """Return what is missing, told so that options that lack the same stand together."""
+    own = f"[options.{option.entry.refrigerant.designation}]"
+    return f"unknown, for want of {missing.replace(own, 'its table in [options]')}"
 
 
 def _energy(options: tuple[Prospect, ...], units: UnitSystem) -> Matter:
@@ -333,7 +340,7 @@ PAYBACKS = (
 def _payback_group(as_is: Prospect, option: Prospect) -> str:
     appraisal = option.account.appraisal
     if appraisal is None or appraisal.payback_years is None:
-        return f"unknown, for want of {missing_words(option, 'cost')}"
+        return _unknown(option, missing_words(option, "cost"))
     years, life = float(appraisal.payback_years), appraisal.life_years
     if math.isinf(years):
         return PAYBACKS[3]
@@ -461,7 +468,10 @@ def ranking_words(found: Ranked) -> tuple[str, ...]:
 
 def _gates(found: Ranked) -> tuple[str, ...]:
     """Return which options are not ranked, and the gate of each."""
-    gates = "; ".join(f"{name} ({why})" for name, why in found.scores.not_ranked.items())
+    by_gate: dict[str, list[str]] = {}
+    for name, why in found.scores.not_ranked.items():
+        by_gate.setdefault(why, []).append(name)
+    gates = "; ".join(f"{listed(names, 'and')} ({why})" for why, names in by_gate.items())
     return (f"Not ranked, whatever the weights: {gates}.",) if gates else ()
 
 

@@ -214,8 +214,8 @@ def method(comparison: Comparison) -> tuple[str, ...]:
         "A draw is one set of values of all inputs that may be off, each taken at random within its limits, and the "
         f"whole plant computed with it: design point, year, emissions and money. {life.draws} draws were made with "
         f"seed {life.seed}; the same seed gives the same numbers. They are a Latin hypercube: of each input every "
-        f"one of {life.draws} equal shares of its distribution is taken once. Every option meets the same draws, so that what "
-        "they have in common cancels where they are compared.",
+        f"one of {life.draws} equal shares of its distribution is taken once. Every option meets the same "
+        "draws, so that what they have in common cancels where they are compared.",
         "An input with a plus or minus lies anywhere within it, nowhere more likely than elsewhere: a rectangular "
         f"distribution, {GUIDE}. One with low, base and high is triangular about its base. Inputs are taken as "
         "independent of each other. The limits themselves are estimates: measure what moves the answer most.",

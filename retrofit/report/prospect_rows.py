@@ -57,7 +57,10 @@ class Options:
     def unknown(self, option: Prospect, why: str) -> Cell:
         """Return a cell of what is not known, with what is missing in a note if that can be said."""
         price = f"{option.entry.refrigerant.designation} in `refrigerant_price`"
-        text = spelled(why.replace(price, "its price, in `refrigerant_price`"))  # so that options share a note
+        own = f"[options.{option.entry.refrigerant.designation}]"
+        # So that options that lack the same share a note.
+        told = why.replace(price, "its price, in `refrigerant_price`").replace(own, "its table in [options]")
+        text = spelled(told)
         marks = (self.notes.mark(shown_name(option), f"unknown, for want of {text}"),) if why else ()
         return Cell(UNKNOWN, is_number=False, marks=marks)
 

@@ -328,7 +328,8 @@ def _left_open(option: Prospect) -> Iterator[str]:
         parts = ", ".join(name[:1].lower() + name[1:] for name in first.not_counted)
         yield f"No sum given, so not counted in the first cost: {parts}"
     if missing := missing_words(option, "cost"):
-        yield f"Unknown for want of {missing}"
+        own = f"[options.{option.entry.refrigerant.designation}]"
+        yield f"Unknown for want of {missing.replace(own, 'its table in [options]')}"
 
 
 # How sure
