@@ -10,6 +10,7 @@ from dataclasses import dataclass
 from retrofit.checks.answer import Matter
 from retrofit.checks.prospects import (
     FAR_FROM_METER,
+    KEPT,
     Prospect,
     Ranked,
     difference,
@@ -205,6 +206,8 @@ def _by_difference(
     less, near, more = words
     found: dict[str, list[str]] = {less: [], near: [], more: []}
     for option in options[1:]:
+        if quantity == "energy" and option.deed == KEPT:
+            continue  # the same plant: the same electricity
         change = difference(options[0], option, quantity)
         if change.amount is None:
             found.setdefault(_unknown(option, change.missing), []).append(option.name)
@@ -236,7 +239,7 @@ def _within() -> str:
 
 def _alike(options: Sequence[Prospect], quantity: str) -> Matter:
     """Return which options the model cannot tell apart among themselves."""
-    apart = [option for option in options if option.deed != "kept, with its repairs"]
+    apart = [option for option in options if option.deed != KEPT]
     found = [listed([option.name for option in group], "and") for group in groups(apart, quantity)]
     about = {"energy": "Electricity of a year", "emissions": "Warming", "cost": "Cost over the remaining life"}[
         quantity

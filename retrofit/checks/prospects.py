@@ -17,7 +17,8 @@ from retrofit.study.ranking import Flip, Order, Scores, Stability, flip, order, 
 from retrofit.study.spread import at
 from retrofit.study.year import YearRun
 
-DEEDS = {"as is": "as it is", "keep": "kept, with its repairs", "convert": "converted", "replace": "new plant"}
+KEPT = "kept, with its repairs"
+DEEDS = {"as is": "as it is", "keep": KEPT, "convert": "converted", "replace": "new plant"}
 NO_MONEY = "the case has no [money]"
 NOT_GIVEN = "remaining life, `remaining_life` in [law]"
 MODELLED_COSTS = ("energy", "demand")  # parts of a yearly cost that the model reckons

@@ -5,12 +5,10 @@ from __future__ import annotations
 from collections.abc import Sequence
 from typing import Any
 
-from retrofit.checks.prospects import Prospect
+from retrofit.checks.prospects import KEPT, Prospect
 from retrofit.figures.style import HAIRLINE, INK, LABEL_PT, SMALL_PT, THIN, Mark, mark_of
 from retrofit.study import Comparison
 from retrofit.units import format_number
-
-KEPT = "kept, with its repairs"
 
 
 def spread(wanted: Sequence[float], least: float) -> list[float]:

@@ -14,6 +14,8 @@ from retrofit.figures.style import INK, SMALL_PT, THIN
 from retrofit.study import Comparison
 from retrofit.units import format_number
 
+OFF_SCALE = 3.0  # times what most options cost
+
 
 def payback_chart(comparison: Comparison) -> Drawing | None:
     """Draw what each option has cost more than the plant as it is against the years, and mark its payback.
@@ -22,10 +24,10 @@ def payback_chart(comparison: Comparison) -> Drawing | None:
         comparison: A result with its remaining life.
     Returns: The chart in the currency of the case; None if nothing of it is known.
     """
-    options = [option for option in prospects(comparison)[1:] if _extra(option) is not None]
+    options, beyond = _on_scale([option for option in prospects(comparison)[1:] if _extra(option) is not None])
     if not options:
         return None
-    with canvas(3.1, 0.85, 1.15, 0.26, 0.46) as figure:
+    with canvas(3.1, 0.85, 1.4, 0.26, 0.46) as figure:
         axes = figure.subplots()
         axes.axhline(0.0, color=INK, linewidth=THIN)
         lines = [_line(comparison, axes, option) for option in options]
@@ -35,7 +37,8 @@ def payback_chart(comparison: Comparison) -> Drawing | None:
         axes.set_ylim(axes.get_ylim())
         thousands(axes.yaxis)
         upright(axes, life, f"end of the remaining life, {life:g} years", "right")
-        ends = [(float(y[-1]), mark_in(comparison, o), label_of(o)) for o, (_, y) in zip(options, lines, strict=True)]
+        named = [(o, f"{label_of(o)}{_after(o)}") for o in options]
+        ends = [(float(y[-1]), mark_in(comparison, o), text) for (o, text), (_, y) in zip(named, lines, strict=True)]
         end_labels(axes, ends, 0.07)
         axes.annotate(
             "dearer so far", (0.0, 0.0), (4, 3), textcoords="offset points", fontsize=SMALL_PT, style="italic"
@@ -44,15 +47,34 @@ def payback_chart(comparison: Comparison) -> Drawing | None:
                       style="italic")  # fmt: skip
         axes.set_xlabel("Years from the change")
         axes.set_ylabel(f"Cost so far, less as it is [{currency(comparison)}]")
-        words = "; ".join(_words(option) for option in options)
+        words = "; ".join(_words(option) for option in (*options, *beyond))
         svg = to_svg(figure, "payback", "Cost over the years", f"In {currency(comparison)}: {words}")
     left_out = [label_of(option) for option in prospects(comparison)[1:] if _extra(option) is None]
+    far = f" Far above the scale: {'; '.join(_words(option) for option in beyond)}." if beyond else ""
     more = f" Not drawn, since first cost, saving or life is unknown: {', '.join(left_out)}." if left_out else ""
     caption = (
-        "What each option has cost more than the plant as it is, first cost and every year since. Where its line comes "
-        f"down to zero it has paid back (ring); prices as today, nothing discounted.{more}"
+        "What each option has cost more than the plant as it is, first cost and every year since. Where its line "
+        f"comes down to zero it has paid back (ring, and years beside its name); prices as today, nothing "
+        f"discounted.{far}{more}"
     )
     return Drawing("payback", svg, caption, words)
+
+
+def _on_scale(options: list[Prospect]) -> tuple[list[Prospect], list[Prospect]]:
+    """Return the options of one scale, and those so dear that the others would lie flat beside them."""
+    highest = {id(option): float(np.max(_extra(option))) for option in options}
+    if not options:
+        return [], []
+    limit = OFF_SCALE * max(float(np.median(list(highest.values()))), 0.0)
+    far = [option for option in options if 0.0 < limit < highest[id(option)]]
+    return [option for option in options if option not in far], far
+
+
+def _after(option: Prospect) -> str:
+    appraisal = option.account.appraisal
+    payback = None if appraisal is None or appraisal.payback_years is None else float(appraisal.payback_years)
+    is_within = payback and appraisal and appraisal.life_years is not None and payback <= float(appraisal.life_years)
+    return f", {payback:.1f} y" if is_within else ""
 
 
 def _extra(option: Prospect) -> Any:
@@ -67,8 +89,6 @@ def _line(comparison: Comparison, axes: Any, option: Prospect) -> tuple[Any, Any
     payback = None if appraisal.payback_years is None else float(appraisal.payback_years)
     if payback and payback <= float(x[-1]):
         axes.plot([payback], [0.0], "o", markersize=8, markerfacecolor="none", markeredgecolor=mark.colour)
-        axes.annotate(f"{payback:.1f}", (payback, 0.0), (-5, -5), textcoords="offset points", ha="right", va="top",
-                      fontsize=SMALL_PT)  # fmt: skip
     return x, y
 
 

@@ -8,9 +8,9 @@ from typing import Any
 
 import numpy as np
 
-from retrofit.checks.prospects import Prospect, life_of_result, prospects
+from retrofit.checks.prospects import KEPT, Prospect, life_of_result, prospects
 from retrofit.figures.drawing import Drawing, canvas, to_svg
-from retrofit.figures.labels import KEPT, end_labels, label_of, mark_in, thousands, upright
+from retrofit.figures.labels import end_labels, label_of, mark_in, thousands, upright
 from retrofit.figures.style import HAIRLINE, INK, SMALL_PT, THIN
 from retrofit.study import Comparison
 from retrofit.study.bands import model_band

@@ -45,7 +45,7 @@ def certainty_table(comparison: Comparison, options: Options) -> Table | None:
     rows = tuple(
         Row(label, "%", tuple(_share(options, option, name) for option in options.all)) for label, name in PROBABILITIES
     )
-    groups = (Group("shares", f"Share of {life.draws} draws in which an option …", rows),)
+    groups = (Group("shares", f"Share of the {life.draws} draws in which it", rows),)
     basis = (
         "Basis: all inputs that may be off drawn together, every option with the same draws; against the plant as it "
         "is. The cooling needed is that of the design point, on the existing plant."
@@ -55,7 +55,8 @@ def certainty_table(comparison: Comparison, options: Options) -> Table | None:
 
 def _share(options: Options, option: Prospect, name: str) -> Cell:
     value = probability(option, name)
-    if option is options.all[0] and name != "carries":
+    is_itself = option.entry is options.all[0].entry and name == "uses_less"
+    if is_itself or (option is options.all[0] and name != "carries"):
         return Cell(MISSING)
     if value is None and name == "carries" and option.account.plan.family == "replace" and option.certainty:
         mark = options.notes.mark(shown_name(option), "a new plant is sized to carry what is needed")

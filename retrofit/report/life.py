@@ -7,7 +7,7 @@ from dataclasses import dataclass
 from retrofit import figures
 from retrofit.checks.answer import Matter
 from retrofit.checks.outlook import outlook, told_result
-from retrofit.checks.prospects import leading, life_of_result, prospects
+from retrofit.checks.prospects import KEPT, leading, life_of_result, prospects
 from retrofit.figures import Drawing
 from retrofit.report.certainty import (
     Drawn,
@@ -156,6 +156,6 @@ def _maps(comparison: Comparison, units: UnitSystem) -> tuple[Drawing, ...]:
     asked = life_of_result(comparison).asked
     if asked is None:
         return ()
-    options = {option.entry.refrigerant.designation: option for option in prospects(comparison)}
-    found = (figures.map_chart(option, asked, units) for option in options.values())
+    options = (option for option in prospects(comparison) if option.deed != KEPT)  # the same plant as it is
+    found = (figures.map_chart(option, asked, units) for option in options)
     return tuple(drawing for drawing in found if drawing is not None)

@@ -63,12 +63,13 @@ def _first(options: Options, unit: str) -> tuple[Row, ...]:
         is_range = found is not None and found[0] < found[2]
         return Cell(f"{rounded_text(found[0])} to {rounded_text(found[2])}" if found and is_range else MISSING)
 
-    for option in options.all:
+    def note(option: Prospect) -> str:
         first = option.account.first_cost
-        if first is not None and first.not_counted and first.total is not None:
-            options.notes.mark(shown_name(option), f"no sum given, so not counted: {_listed(first.not_counted)}")
+        parts = first.not_counted if first else ()
+        return f"no sum given, so not counted: {_listed(parts)}" if parts else ""
+
     return (
-        options.row("First cost", unit, base, rounded_text, why),
+        options.row("First cost", unit, base, rounded_text, why, note),
         Row("Every item low to every item high", unit, tuple(spread(option) for option in options.all)),
     )
 

@@ -36,7 +36,13 @@ class Options:
         return tuple(shown_name(option) for option in self.all)
 
     def row(
-        self, label: str, unit: str, read: Read, show: Callable[[float], str], why: Callable[[Prospect], str]
+        self,
+        label: str,
+        unit: str,
+        read: Read,
+        show: Callable[[float], str],
+        why: Callable[[Prospect], str],
+        note: Callable[[Prospect], str] = lambda option: "",
     ) -> Row:
         """Return a row of numbers; one that is not known reads so, with what is missing in a note.
 
@@ -46,13 +52,17 @@ class Options:
             read: The number of an option.
             show: Its text.
             why: What is missing if there is none.
+            note: What is to be said of a number that there is; empty for nothing.
         """
-        return Row(label, unit, tuple(self._cell(option, read(option), show, why) for option in self.all))
 
-    def _cell(
-        self, option: Prospect, value: float | None, show: Callable[[float], str], why: Callable[[Prospect], str]
-    ) -> Cell:
-        return self.unknown(option, why(option)) if value is None else Cell(show(value))
+        def cell(option: Prospect) -> Cell:
+            value = read(option)
+            if value is None:
+                return self.unknown(option, why(option))
+            text = note(option)
+            return Cell(show(value), marks=(self.notes.mark(shown_name(option), text),) if text else ())
+
+        return Row(label, unit, tuple(cell(option) for option in self.all))
 
     def unknown(self, option: Prospect, why: str) -> Cell:
         """Return a cell of what is not known, with what is missing in a note if that can be said."""
@@ -79,7 +89,8 @@ class Options:
             if found.ratio is None:
                 return self.unknown(option, found.missing)
             text = percent(found.ratio).removesuffix("\N{NO-BREAK SPACE}%")
-            return Cell(near(text) if found.is_alike else text)
+            is_modelled = found.is_alike and option.entry is not self.all[0].entry
+            return Cell(near(text) if is_modelled else text)
 
         return Row(label, "%", tuple(cell(option) for option in self.all))
 

@@ -103,7 +103,8 @@ def _change(as_is: Prospect, options: Sequence[Prospect], quantity: str) -> list
     for option in options:
         change = difference(as_is, option, quantity)
         text = percent(change.ratio, 1)
-        found.append(NOTHING if option is as_is else f"{NEAR} {text}" if change.is_alike else text)
+        is_near = change.is_alike and option.entry is not as_is.entry
+        found.append(NOTHING if option is as_is else f"{NEAR} {text}" if is_near else text)
     return found
 
 
@@ -355,7 +356,8 @@ def _certainty(comparison: Comparison, options: Sequence[Prospect], strong: Emph
 
 def _probability(as_is: Prospect, option: Prospect, name: str) -> str:
     value = probability(option, name)
-    if option is as_is and name != "carries":
+    is_itself = option.entry is as_is.entry and name == "uses_less"
+    if is_itself or (option is as_is and name != "carries"):
         return NOTHING
     if name == "carries" and option.account.plan.family == "replace":
         return "sized for it"

@@ -13,7 +13,7 @@ from retrofit.study import Comparison
 from retrofit.study.year import YearConditions, YearRun
 from retrofit.units import MISSING, UnitSystem, format_number
 
-BY_MAKER_ONLY = "it, since the maker's seasonal COP says nothing of it"
+BY_MAKER_ONLY = "more than the maker's seasonal COP"
 HEATED = {"cooling": "cooling", "heating": "heat"}
 
 
@@ -56,10 +56,9 @@ def year_table(comparison: Comparison, options: Options, units: UnitSystem) -> T
         _row(options, "Peak power, mean of an hour", power, lambda year: year.peak_W, lambda v: units.text("power", v)),
         _row(options, _seasonal(asked), "", lambda year: year.seasonal_cop, lambda v: format_number(v, 2)),
         _row(options, "Compressors run", "%", lambda year: year.run_time_fraction, lambda v: format_number(100 * v, 0)),
-        _row(options, "Hours with unmet load", "h", lambda year: year.unmet_h, lambda v: format_number(v, 0)),
+        _row(options, "Hours with unmet load", "h", lambda year: year.unmet_h, _whole, _unmet),
         _row(options, "Unmet load", energy, lambda year: year.unmet_J, lambda v: _energy(units, v)),
     )
-    _mark_unmet(options)
     groups = (Group("year", f"Basis: same plant, a year, weather {plain(asked.source)}", rows),)
     caption = "A year of every option"
     return Table("year", caption, year_basis(comparison, units), options.names, groups, options.notes.listed())
@@ -110,13 +109,8 @@ def year_parts(comparison: Comparison, options: Options, units: UnitSystem) -> T
             lambda y: y.p_cond_highest_Pa,
             lambda v: units.gauge_text(v, ambient),
         ),
-        _row(options, "Hours without a solution", "h", lambda y: y.not_solved_h, lambda v: format_number(v, 0)),
+        _row(options, "Hours without a solution", "h", lambda y: y.not_solved_h, _whole, _unsolved),
     ]
-    for option in options.all:
-        if option.year and option.year.not_solved_h:
-            why = f": {option.year.reason}" if option.year.reason else ""
-            text = f"hours without a solution count as unmet{why}"
-            options.notes.mark(option.entry.refrigerant.display_name, text)
     groups = (Group("parts", "Basis: same plant, the same year as in the main part", tuple(rows)),)
     basis = year_basis(comparison, units)
     return Table("year-parts", "Parts of a year", basis, options.names, groups, options.notes.listed())
@@ -131,7 +125,12 @@ def _part(name: str) -> Callable[[YearRun], float | None]:
 
 
 def _row(
-    options: Options, label: str, unit: str, read: Callable[[YearRun], float | None], show: Callable[[float], str]
+    options: Options,
+    label: str,
+    unit: str,
+    read: Callable[[YearRun], float | None],
+    show: Callable[[float], str],
+    note: Callable[[Prospect], str] = lambda option: "",
 ) -> Row:
     """Return a row of numbers of the year; what a year by its maker leaves open reads unknown."""
 
@@ -141,16 +140,23 @@ def _row(
     def why(option: Prospect) -> str:
         return missing_of("energy")(option) or BY_MAKER_ONLY
 
-    return options.row(label, unit, value, show, why)
+    return options.row(label, unit, value, show, why, note)
 
 
-def _mark_unmet(options: Options) -> None:
-    for option in options.all:
-        if option.year and option.year.unmet_h:
-            options.notes.mark(
-                option.entry.refrigerant.display_name,
-                "part of its load is unmet, so its electricity buys less than that of an option that meets it",
-            )
+def _unmet(option: Prospect) -> str:
+    if option.year is None or not option.year.unmet_h:
+        return ""
+    return "part of its load is unmet, so its electricity buys less than that of an option that meets it"
+
+
+def _unsolved(option: Prospect) -> str:
+    if option.year is None or not option.year.not_solved_h:
+        return ""
+    return f"they count as unmet{f': {option.year.reason}' if option.year.reason else ''}"
+
+
+def _whole(value: float) -> str:
+    return format_number(value, 0)
 
 
 def _number(units: UnitSystem, energy_J: float) -> float:

@@ -220,7 +220,8 @@ def _within_limits(case: Case, key: str, spread: Spread) -> Iterator[Uncertain]:
     else:
         return
     kind, name = named(case, key)
-    low = max(base - half, 0.0) if kind in NOT_BELOW_ZERO else base - half
+    is_bounded = kind in NOT_BELOW_ZERO and key != WEATHER  # a year may be colder too
+    low = max(base - half, 0.0) if is_bounded else base - half
     high = min(base + half, 1.0) if kind == "fraction" else base + half
     if low < high:
         yield Uncertain(key, name, kind, Spread(low, base, high), origin, why)
