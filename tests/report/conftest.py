@@ -12,6 +12,7 @@ from retrofit.case import read_case
 from retrofit.checks import assess
 from retrofit.report import render_html
 from retrofit.study import compare
+from retrofit.study.life import with_life
 
 ROOT = Path(__file__).resolve().parents[2]
 CASES = sorted(path.stem for path in (ROOT / "cases").glob("*.toml"))
@@ -133,3 +134,15 @@ class _Reader(HTMLParser):
             if piece is not None and "sup" not in names:
                 gap = " " if self.open[-1][1].get("class") == "unit" else ""
                 self.pieces[kind] = piece + gap + data
+
+
+
+@cache
+def _lived(name):
+    return with_life(_assessed(name), draws=60, seed=1)
+
+
+@pytest.fixture(scope="session")
+def lived():
+    """Return a function that gives the result of a shipped case with its remaining life, of few draws."""
+    return _lived

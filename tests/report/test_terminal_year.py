@@ -1,0 +1,83 @@
+"""The remaining life in the terminal: cautions first, then numbers, each the one of the JSON."""
+
+import re
+
+import pytest
+
+from retrofit.report.machine_year import year_json
+from retrofit.report.terminal_year import year_text
+from retrofit.units import IP, SI
+
+J_PER_KWH = 3.6e6
+
+
+@pytest.fixture(scope="module")
+def text(lived):
+    """Return what the terminal shows of a shipped case."""
+    return year_text(lived("harbour-market"), SI, 100)
+
+
+def rows(text, heading):
+    """Return the cells of the table under a heading, row by row, without its heads."""
+    block = text[text.index(heading) :].split("\n\n")[0].splitlines()
+    start = next(place for place, line in enumerate(block) if line.startswith("───"))
+    found = [re.split(r" {2,}", line) for line in block[start + 1 :]]
+    return [row for row in found if len(row) > 4]
+
+
+def number(cell):
+    """Return the number of a cell."""
+    return float(re.sub(r"[\s≈+%\u202f]|beyond", "", cell).replace("−", "-"))
+
+
+def test_cautions_stand_above_the_numbers(text, lived):
+    """Every caution of every refrigerant is there, before the first table."""
+    titles = {caution.title for entry in lived("harbour-market").entries for caution in entry.cautions}
+
+    assert titles
+    assert all(" ".join(title.split()) in " ".join(text.split()) for title in titles)
+    assert text.index("Cautions") < text.index("A year: same plant")
+
+
+def test_numbers_are_those_of_the_json(text, lived):
+    """Electricity, sum of the warming, first cost and payback of every option."""
+    told = year_json(lived("harbour-market"))["options"]
+    year, warming, money = (
+        rows(text, head) for head in ("A year: same", "Warming over the remaining life (", "Money in")
+    )
+
+    assert [len(found) for found in (year, warming, money)] == [8, 8, 8]
+    for a, b, c, option in list(zip(year, warming, money, told, strict=True))[1:]:
+        assert number(a[1]) == pytest.approx(option["year"]["energy_J"] / J_PER_KWH, rel=6e-4)
+        assert number(b[7]) == pytest.approx(option["emissions"]["total_kg"] / 1000.0, rel=6e-4)
+        assert number(c[1]) == pytest.approx(option["money"]["first_cost_currency"]["base"], rel=6e-4)
+        assert number(c[4]) == pytest.approx(option["money"]["payback_years"], abs=0.051)
+        assert ("beyond" in c[4]) == (option["money"]["payback_years"] > option["emissions"]["life_years"])
+
+
+def test_what_is_assumed_and_stopped_is_said(text):
+    """The gate of the flammable option, the meter, the seed and the limits assumed stand in words."""
+    flat = " ".join(text.split())
+
+    assert "A check stops R454C" in flat
+    assert "Not ranked, whatever the weights: R454C" in flat
+    assert "ratio 0.98" in flat
+    assert "with seed 1" in flat
+    assert "Plus or minus assumed for: " in flat
+
+
+def test_inch_pound_units_reach_every_table(lived):
+    """The heat pump in inch-pound units: pounds and degrees Fahrenheit, no kilogram of charge and no kelvin limits."""
+    text = year_text(lived("coast-heat-pump"), IP, 100)
+    charge = text[text.index("Warming over the remaining life (TEWI)") :].splitlines()[2]
+
+    assert charge.split()[0] == "lb"
+    assert "°F" in text
+    assert "°C" not in text
+
+
+def test_hours_without_their_load_are_named(lived):
+    """A candidate that leaves load unmet says so beside its lower electricity."""
+    text = " ".join(year_text(lived("coast-heat-pump"), SI, 100).split())
+
+    assert re.search(r"some of it unmet, so that part of a lower electricity is load not met: R454B \d+", text)
