@@ -507,7 +507,8 @@ def _named(comparison: Comparison, options: Sequence[Prospect]) -> list[Prospect
     report = comparison.case.report
     chosen = [name for name in ((report.recommended, report.fallback) if report else ()) if name]
     if chosen:
-        return [option for option in options if option.entry.refrigerant.designation in chosen]
+        named = [option for option in options if option.entry.refrigerant.designation in chosen]
+        return sorted(named, key=lambda option: chosen.index(option.entry.refrigerant.designation))
     open_ = [option for option in options if not any(finding.level == "stop" for finding in option.entry.findings)]
     return (open_ or list(options))[:MOST_ON_PAGE_ONE]
 

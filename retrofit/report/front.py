@@ -146,8 +146,9 @@ def costs_line(comparison: Comparison, units: UnitSystem) -> str:
         units: The reader's units.
     """
     if comparison.life is None:
-        return "Not known here: what a year uses and costs needs [year], [emissions] or [money] in the case."
-    return plain(spelled(costs_words(comparison, units)))
+        why = "the case has no [year]" if comparison.case.year is None else "though the case has a [year]"
+        return f"Not known here: a year's energy and its cost are not computed, {why}. First cost is not computed either."
+    return plain(spelled(costs_words(comparison, units.systems[0])))
 
 
 def plain(text: str) -> str:

@@ -98,7 +98,8 @@ def life_part(comparison: Comparison, units: UnitSystem) -> LifePart | None:
     """
     if comparison.life is None:
         return None
-    words, life = outlook(comparison, units), life_of_result(comparison)
+    axes = units.systems[0]  # of sentences and charts, which carry one system
+    words, life = outlook(comparison, axes), life_of_result(comparison)
     all_ = prospects(comparison)
 
     def options() -> Options:
@@ -121,16 +122,16 @@ def life_part(comparison: Comparison, units: UnitSystem) -> LifePart | None:
         money=money_table(comparison, options()),
         certainty=certainty_table(comparison, options()),
         year_parts=year_parts(comparison, options(), units),
-        energy_chart=figures.energy_chart(comparison, units),
-        ambient_chart=figures.ambient_chart(comparison, units),
+        energy_chart=figures.energy_chart(comparison, axes),
+        ambient_chart=figures.ambient_chart(comparison, axes),
         warming_chart=figures.warming_chart(comparison),
         payback_chart=figures.payback_chart(comparison),
-        tornado=figures.tornado_chart(comparison, first, result, units) if first and result else None,
-        maps=_maps(comparison, units),
+        tornado=figures.tornado_chart(comparison, first, result, axes) if first and result else None,
+        maps=_maps(comparison, axes),
         costs=cost_items(options()) if money else (),
-        spans=spans(comparison, options(), units),
+        spans=spans(comparison, options(), axes),
         inputs=drawn_inputs(comparison, units),
-        moved=moved(comparison, options(), units),
+        moved=moved(comparison, options(), axes),
         method=tuple(spelled(text) for text in method(comparison)),
         weights=weights(comparison),
         left_out=left_out(comparison) if life.accounts else (),
