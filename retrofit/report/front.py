@@ -147,7 +147,8 @@ def costs_line(comparison: Comparison, units: UnitSystem) -> str:
     """
     if comparison.life is None:
         why = "the case has no [year]" if comparison.case.year is None else "though the case has a [year]"
-        return f"Not known here: a year's energy and its cost are not computed, {why}. First cost is not computed either."
+        first = "First cost is not computed either."
+        return f"Not known here: a year's energy and its cost are not computed, {why}. {first}"
     return plain(spelled(costs_words(comparison, units.systems[0])))
 
 
