@@ -136,7 +136,6 @@ class _Reader(HTMLParser):
                 self.pieces[kind] = piece + gap + data
 
 
-
 @cache
 def _lived(name):
     return with_life(_assessed(name), draws=60, seed=1)
