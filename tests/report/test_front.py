@@ -279,3 +279,16 @@ def test_an_own_template_takes_the_place_of_page_one(market, made_at, tmp_path):
 
     assert "Ours: The plant runs on R-404A" in html
     assert "Ours too." in html
+
+
+def test_a_report_carries_its_logo(made_at, tmp_path):
+    """The picture stands among the files that the page keeps for a later run, byte by byte."""
+    from retrofit.report.carried.reader import read_carried
+
+    text = (CASES / "harbour-market.toml").read_text("utf-8").replace('# logo = "logo.svg"', 'logo = "logo.svg"')
+    (tmp_path / "plant.toml").write_text(text, "utf-8")
+    (tmp_path / "logo.svg").write_bytes(SVG)
+    html = render_html(assess(compare(read_case(tmp_path / "plant.toml"))), made_at=made_at)
+    (tmp_path / "plant.html").write_text(html, "utf-8")
+
+    assert read_carried(tmp_path / "plant.html").files["logo.svg"] == SVG
