@@ -5,7 +5,7 @@ convention. Everything broadcasts, so one point, a year and a thousand draws go 
 """
 
 from retrofit.cycle.matching import Temperatures, cycle_temperatures, matched_pressures, pressure_at_mean
-from retrofit.cycle.single_stage import Cycle, Settings, solve_cycle
+from retrofit.cycle.single_stage import Cycle, Settings, compressor_pressures, solve_cycle
 from retrofit.cycle.states import StatePoint, state_points
 
 __all__ = [
@@ -13,6 +13,7 @@ __all__ = [
     "Settings",
     "StatePoint",
     "Temperatures",
+    "compressor_pressures",
     "cycle_temperatures",
     "matched_pressures",
     "pressure_at_mean",

@@ -130,8 +130,7 @@ def solve_cycle(fluid: Fluid, p_evap_Pa: ArrayLike, p_cond_Pa: ArrayLike, settin
     p_cond_Pa = _above(fluid, p_evap_Pa, p_cond_Pa)
     evaporator = fluid.vapour(p_evap_Pa, settings.useful_superheat_K)
     superheat = np.asarray(settings.useful_superheat_K) + np.asarray(settings.line_superheat_K)
-    p_suction = _shifted(fluid, p_evap_Pa, -np.asarray(settings.suction_drop_K))
-    p_discharge = _shifted(fluid, p_cond_Pa, np.asarray(settings.discharge_drop_K))
+    p_suction, p_discharge = compressor_pressures(fluid, p_evap_Pa, p_cond_Pa, settings)
     suction = fluid.vapour(p_suction, superheat + np.asarray(settings.suction_drop_K))
     h_isentropic = fluid.h_at_entropy(p_discharge, suction.s_J_per_kgK)
     work = (h_isentropic - suction.h_J_per_kg) / np.asarray(settings.isentropic_efficiency)
@@ -143,7 +142,7 @@ def solve_cycle(fluid: Fluid, p_evap_Pa: ArrayLike, p_cond_Pa: ArrayLike, settin
         "p_evap_Pa": evaporator.p_Pa,
         "p_cond_Pa": dew.p_Pa,
         "p_suction_Pa": suction.p_Pa,
-        "p_discharge_Pa": np.asarray(p_discharge, dtype=float),
+        "p_discharge_Pa": p_discharge,
         "T_evap_dew_K": evaporator.T_K - np.asarray(settings.useful_superheat_K),
         "T_evap_inlet_K": inlet.T_K,
         "T_cond_dew_K": dew.T_K,
@@ -161,6 +160,24 @@ def solve_cycle(fluid: Fluid, p_evap_Pa: ArrayLike, p_cond_Pa: ArrayLike, settin
     }
     shape = np.broadcast_shapes(*(np.shape(array) for array in arrays.values()))
     return Cycle(settings=settings, **{name: np.broadcast_to(array, shape) for name, array in arrays.items()})
+
+
+def compressor_pressures(
+    fluid: Fluid, p_evap_Pa: ArrayLike, p_cond_Pa: ArrayLike, settings: Settings
+) -> tuple[FloatArray, FloatArray]:
+    """Return suction and discharge pressure at the compressor, which need no more of a cycle than its drops. [Pa]
+
+    Args:
+        fluid: Refrigerant.
+        p_evap_Pa: Pressure of the evaporator. [Pa]
+        p_cond_Pa: Pressure of the condenser. [Pa]
+        settings: Its drops are used. [K]
+    Raises: OutsideValidRangeError if a pressure lies outside the fluid's range or the condensing pressure is not
+        above the evaporating one (NaN there if the fluid is lenient).
+    """
+    suction = _shifted(fluid, p_evap_Pa, -np.asarray(settings.suction_drop_K))
+    discharge = _shifted(fluid, _above(fluid, p_evap_Pa, p_cond_Pa), np.asarray(settings.discharge_drop_K))
+    return np.asarray(suction, dtype=float), np.asarray(discharge, dtype=float)
 
 
 def _shifted(fluid: Fluid, p_Pa: ArrayLike, by_K: FloatArray) -> ArrayLike:

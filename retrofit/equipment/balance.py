@@ -28,6 +28,7 @@ MOST_STEPS = 40
 LONGEST_STEP_K = 10.0
 SMALLEST_LEAD_K = 0.1
 STILL_OPEN = 0.7  # share of conditions below which those that are settled are put aside
+FEW = 64  # conditions: as many take as long as one
 CHUNK = 2048  # conditions solved together: small enough for the processor's cache
 EVAPORATOR_PARTS, CONDENSER_PARTS = 4, 4
 DESUPERHEATING = np.array([0.0, 0.35, 0.7])  # shares of the way from discharge to dew point
@@ -280,21 +281,21 @@ def _solve(fluid: Fluid, machine: Machine, conditions: _Conditions) -> Balance:
     given = conditions.arrays
     lowest, highest = fluid.T_range_K[0] + 0.5, fluid.T_range_K[1] - 0.05
     start = np.clip(np.stack([given["T_evap"], given["T_cond"]]), lowest, highest)
-    T = _settled(fluid, machine, given, start, (lowest, highest))
-    now = _state(fluid, machine, given, T)
+    T, now = _settled(fluid, machine, given, start, (lowest, highest))
     error = np.max(_error(now), axis=0)
     solved = error < SOLVED_BELOW
     return _balance(now, error, np.where(solved, "", _reasons(T, given, lowest, highest)))
 
 
 def _settled(
-    fluid: Fluid, machine: Machine, given: Mapping[str, FloatArray], T: FloatArray, limits: tuple[float, float]
-) -> FloatArray:
-    """Return the temperatures at which conditions settle, or where the search for them ended, shape (2, n)."""
+    fluid: Fluid, machine: Machine, conditions: Mapping[str, FloatArray], T: FloatArray, limits: tuple[float, float]
+) -> tuple[FloatArray, _State]:
+    """Return where conditions settle, or where the search for that ended: temperatures, shape (2, n), and the state."""
 
     def at(T: FloatArray) -> _State:
         return _state(fluid, machine, given, T)
 
+    given = conditions
     found, active = T.copy(), np.arange(T.shape[1])
     now = at(T)
     slopes = _slopes(fluid, machine, given, T, now.lack)
@@ -302,15 +303,17 @@ def _settled(
         is_open = np.any(_error(now) > RESIDUAL_TOLERANCE, axis=0)
         if not np.any(is_open):
             break
-        if np.mean(is_open) < STILL_OPEN:
+        if is_open.size > FEW and np.mean(is_open) < STILL_OPEN:
             # The few that take longer, or have no solution, do not hold up the others.
             found[:, active] = T
             active, T, slopes = active[is_open], T[:, is_open], slopes[:, :, is_open]
             given = {name: array[is_open] for name, array in given.items()}
             now = at(T)
         T, now, slopes = _stepped(at, T, now, slopes, _newton_step(slopes, now.lack), limits)
+    if active.size == found.shape[1]:
+        return T, now
     found[:, active] = T
-    return found
+    return found, _state(fluid, machine, conditions, found)
 
 
 def _error(state: _State) -> FloatArray:

@@ -105,7 +105,7 @@ def _solved(today: Today, entry: Entry, behaviour: Fluid) -> Entry:
     installed, reason = None, today.plant_reason
     if today.plant is not None:
         try:
-            installed = run_installed(today.plant, behaviour, hottest_inlet_K(today.case))
+            installed = run_installed(today.plant, behaviour, cycle, hottest_inlet_K(today.case))
         except NoSolutionError as error:
             reason = error.message
     covered = bool(today.model.covers(cycle.pressure_ratio, cycle.p_suction_Pa))

@@ -181,12 +181,13 @@ def _exchanger(name: str, table: ExchangerTable | None, heat_W: FloatArray) -> E
     return Exchanger(1.0, Secondary(table.inlet_K, rate), table.arrangement)
 
 
-def run_installed(plant: ExistingPlant, behaviour: Fluid, T_hottest_K: float | None = None) -> Installed:
+def run_installed(plant: ExistingPlant, behaviour: Fluid, cycle: Cycle, T_hottest_K: float | None = None) -> Installed:
     """Return what the existing plant does with a refrigerant.
 
     Args:
         plant: The plant as installed.
         behaviour: The refrigerant.
+        cycle: Its cycle at the temperatures held equal: where the search for the balance begins.
         T_hottest_K: At the inlet of the condenser on the hottest day; None if that is not known. [K]
     Returns: Full speed, the same cooling, how the plant meets its duty, and the hottest day.
     Raises: NoSolutionError with the reason if the plant does not balance.
@@ -197,7 +198,7 @@ def run_installed(plant: ExistingPlant, behaviour: Fluid, T_hottest_K: float | N
     machine = _with_films(
         plant.machine, np.array([[*[factor] * 2, 1.0, factor][: 3 if T_hottest_K is None else 4] for factor in factors])
     )
-    cooling, starts = [np.nan, float(plant.today_W), np.nan], plant.start_K
+    cooling, starts = [np.nan, float(plant.today_W), np.nan], (cycle.T_evap_dew_K, cycle.T_cond_dew_K)
     if T_hottest_K is not None:
         usual_K = float(np.asarray(machine.condenser.secondary.T_in_K))
         inlets = np.array([usual_K] * 3 + [T_hottest_K])

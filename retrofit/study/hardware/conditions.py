@@ -8,7 +8,7 @@ import numpy as np
 from numpy.typing import ArrayLike
 
 from retrofit.case import Case
-from retrofit.cycle import Cycle, Settings, Temperatures, matched_pressures, solve_cycle
+from retrofit.cycle import Cycle, Settings, Temperatures, compressor_pressures, matched_pressures, solve_cycle
 from retrofit.equipment.vessels import standstill
 from retrofit.errors import NoSolutionError, OutsideValidRangeError
 from retrofit.properties import Fluid
@@ -61,8 +61,8 @@ def cycle_between(
         model: Efficiencies of the compressor.
     Raises: OutsideValidRangeError outside the range of the refrigerant's model.
     """
-    plain = solve_cycle(behaviour, p_evap_Pa, p_cond_Pa, settings)
-    isentropic, volumetric = model.at(plain.pressure_ratio, plain.p_suction_Pa)
+    p_suction, p_discharge = compressor_pressures(behaviour, p_evap_Pa, p_cond_Pa, settings)
+    isentropic, volumetric = model.at(p_discharge / p_suction, p_suction)
     own = replace(settings, isentropic_efficiency=isentropic, volumetric_efficiency=volumetric)
     return solve_cycle(behaviour, p_evap_Pa, p_cond_Pa, own)
 
