@@ -41,6 +41,7 @@ from retrofit.study.year import (
 )
 
 DRAWS, SEED = 1000, 1
+MOST_DRAWS = 20_000  # at once, for the memory that they take
 MOST_SWINGS = 10
 QUANTILES = (0.1, 0.5, 0.9)
 ROUNDING = 1e-9

@@ -13,8 +13,9 @@ from retrofit.errors import CaseFileError, ReportError
 from retrofit.report.carried.differences import Difference, differences
 from retrofit.report.carried.made_with import PROGRAM, data_digests, group_of, versions_of
 from retrofit.report.carried.reader import Carried
-from retrofit.report.carried.result import digest, result_of
+from retrofit.report.carried.result import LIFE, digest, result_of
 from retrofit.study import Comparison, compare
+from retrofit.study.life import MOST_DRAWS, with_life
 from retrofit.units import shown
 
 CASE_FILE = "case.toml"
@@ -97,7 +98,8 @@ def _computed(carried: Carried, on_build: Callable[[str], None] | None) -> Compa
         case_file = folder / _free_name(carried)
         _write_inside(folder, {case_file.name: carried.case_text.encode("utf-8"), **carried.files}, carried.name)
         try:
-            return assess(compare(_titled(read_case(case_file), carried), on_build), carried.on)
+            case = _titled(read_case(case_file), carried)
+            return _lived(assess(compare(case, on_build), carried.on), carried)
         except CaseFileError as error:
             raise _unusable(carried, error) from error
 
@@ -123,6 +125,18 @@ def _write_inside(folder: Path, files: Mapping[str, bytes], name: str) -> None:
             raise ReportError(
                 f'{name}: it carries a file "{shown(place)}" that cannot stand beside its case'
             ) from error
+
+
+def _lived(comparison: Comparison, carried: Carried) -> Comparison:
+    """Return a result with its remaining life if the report has one, by as many draws and the seed that it names."""
+    life = carried.result.get(LIFE)
+    drawn = life.get("draws") if isinstance(life, Mapping) else None
+    if not isinstance(drawn, Mapping):
+        return comparison
+    draws, seed = drawn.get("number"), drawn.get("seed")
+    if not isinstance(draws, int) or not isinstance(seed, int) or not (0 <= draws <= MOST_DRAWS and seed >= 0):
+        return comparison  # then every number of the life differs, and is named
+    return with_life(comparison, draws, seed)
 
 
 def _unusable(carried: Carried, error: CaseFileError) -> ReportError:

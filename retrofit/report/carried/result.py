@@ -8,10 +8,12 @@ from collections.abc import Mapping
 from typing import Any
 
 from retrofit.report.machine import comparison_json
+from retrofit.report.machine_year import year_json
 from retrofit.study import Comparison
 
 DIGITS = 9  # the property tables are good to five or six
 # Where the file stood and what it was computed with are no part of the result.
+LIFE = "remaining_life"  # there if it was computed
 NOT_PART = ("case_file", "versions")
 
 
@@ -21,7 +23,10 @@ def result_of(comparison: Comparison) -> dict[str, Any]:
     Args:
         comparison: An assessed result.
     """
-    return {key: rounded(value) for key, value in comparison_json(comparison).items() if key not in NOT_PART}
+    found = {key: rounded(value) for key, value in comparison_json(comparison).items() if key not in NOT_PART}
+    if comparison.life is None:
+        return found
+    return {**found, LIFE: {key: rounded(value) for key, value in year_json(comparison).items() if key not in NOT_PART}}
 
 
 def rounded(value: Any) -> Any:
