@@ -3,6 +3,7 @@
 import ast
 import subprocess
 import sys
+from graphlib import TopologicalSorter
 from pathlib import Path
 
 import pytest
@@ -78,6 +79,32 @@ def climbs(room, text):
             elif LADDER.index(target) > LADDER.index(room):
                 found.append(f"{name} climbs")
     return found
+
+
+def _module(path):
+    """Return the full name of a module or package."""
+    return ".".join(path.relative_to(TOP).with_suffix("").parts).removesuffix(".__init__")
+
+
+def _needed(module, names, modules):
+    """Return the modules that have to be loaded before a module is: those it names, and packages around them."""
+    found = set()
+    for name in names:
+        parts = name.split(".")
+        around = {".".join(parts[:end]) for end in range(1, len(parts) + 1)} & modules
+        found |= {each for each in around if each != module and not module.startswith(f"{each}.")}
+    return found
+
+
+def test_no_module_waits_for_itself():
+    """Whichever module is loaded first, none is asked for a name while it is still loading."""
+    modules = {_module(path): path for path in FILES}
+    needs = {
+        name: _needed(name, imports(path.read_text(encoding="utf-8"))[1], modules.keys())
+        for name, path in modules.items()
+    }
+
+    assert list(TopologicalSorter(needs).static_order())  # CycleError names the modules that go in a ring
 
 
 def _parameters(files):

@@ -27,9 +27,9 @@ from retrofit.meeting.security import (
 )
 from retrofit.meeting.session import Moment, Session
 from retrofit.report import render_html
-from retrofit.report.front import plain
 from retrofit.report.guard import POLICY
 from retrofit.report.judging import judged
+from retrofit.report.plain import plain
 from retrofit.report.templates import built_in_folder, filled, render_cautions
 from retrofit.units import UNIT_SYSTEMS
 

@@ -21,10 +21,10 @@ from retrofit.refrigerants import designations
 from retrofit.report.banding import band_text
 from retrofit.report.cautioning import DEFERENCE, CautionGroup, caution_groups
 from retrofit.report.comparing import comparison_table, convention
-from retrofit.report.front import plain
 from retrofit.report.hardware import Matrix, matrices
 from retrofit.report.judging import Judged, judged
 from retrofit.report.page import Answered, answered, facts
+from retrofit.report.plain import plain
 from retrofit.report.table import Cell, Table
 from retrofit.report.values import environment_table
 from retrofit.study import Comparison, Entry

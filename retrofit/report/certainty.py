@@ -8,8 +8,8 @@ from dataclasses import dataclass
 from retrofit.checks.outlook import KG_PER_T, TOLD, currency, result_text, rounded_text
 from retrofit.checks.prospects import Prospect, life_of_result, probability, quantile, ranked
 from retrofit.figures.tornado import limits_text
-from retrofit.report.front import plain
 from retrofit.report.judging import spelled
+from retrofit.report.plain import plain
 from retrofit.report.prospect_rows import Options, missing_of, shown_name
 from retrofit.report.table import Cell, Group, Row, Table
 from retrofit.study import Comparison

@@ -7,11 +7,11 @@ import datetime
 from dataclasses import dataclass
 
 from retrofit.case import Report
-from retrofit.case.values import is_hidden
 from retrofit.checks.advice import NOTHING, Advice, Chosen, Condition, Stopped, Weighed, advice, deed
 from retrofit.checks.outlook import costs_words
 from retrofit.report.carried.made_with import group_digests
 from retrofit.report.judging import FAMILY_WORDS, reasons, source_title, spelled
+from retrofit.report.plain import plain
 from retrofit.study import Comparison
 from retrofit.units import UnitSystem
 
@@ -150,11 +150,6 @@ def costs_line(comparison: Comparison, units: UnitSystem) -> str:
         first = "First cost is not computed either."
         return f"Not known here: a year's energy and its cost are not computed, {why}. {first}"
     return plain(spelled(costs_words(comparison, units.systems[0])))
-
-
-def plain(text: str) -> str:
-    """Return a text with characters that command or turn the writing round written out, such as \\x1b."""
-    return "".join(c.encode("unicode_escape").decode("ascii") if is_hidden(c) else c for c in text)
 
 
 def day_text(day: datetime.date) -> str:

@@ -21,9 +21,9 @@ from retrofit.report.certainty import (
     weights,
 )
 from retrofit.report.emissions import emissions_table, left_out
-from retrofit.report.front import plain
 from retrofit.report.judging import spelled
 from retrofit.report.money import Costs, cost_items, money_table
+from retrofit.report.plain import plain
 from retrofit.report.prospect_rows import Options
 from retrofit.report.table import Notes, Table
 from retrofit.report.year import year_parts, year_table

@@ -18,13 +18,14 @@ from retrofit.report.cautioning import DEFERENCE, CautionGroup, caution_groups
 from retrofit.report.commissioning import Sheet, sheets
 from retrofit.report.comparing import comparison_table, convention
 from retrofit.report.found import AsFound, as_found
-from retrofit.report.front import Front, front, plain
+from retrofit.report.front import Front, front
 from retrofit.report.guard import POLICY
 from retrofit.report.hardware import Hardware, hardware
 from retrofit.report.inputs import Input, LeftOut, Taken, defaults, fixed, inputs, missing
 from retrofit.report.judging import Judged, Shared, judged, spelled, threshold_sources
 from retrofit.report.law import LawPart, law_part
 from retrofit.report.life import LifePart, life_part
+from retrofit.report.plain import css_string, plain
 from retrofit.report.plant import WHY_SAME_COOLING, has_plant
 from retrofit.report.practice import Method, jobs, method
 from retrofit.report.provenance import Traced, traced_values
@@ -191,14 +192,6 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
         check_sources=threshold_sources(comparison),
         not_checked=not_checked(comparison),
     )
-
-
-def css_string(text: str) -> str:
-    """Return a text fit to stand between the quotes of a CSS string: all but letters and digits as \\hex.
-
-    Source: CSS Syntax Module Level 3, 4.3.7: a backslash, one to six hex digits and a blank.
-    """
-    return "".join(c if c.isascii() and c.isalnum() else f"\\{ord(c):x} " for c in text)
 
 
 def answered(comparison: Comparison, units: UnitSystem) -> Answered:

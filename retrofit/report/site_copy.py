@@ -14,10 +14,10 @@ from retrofit.errors import ReportError
 from retrofit.refrigerants import find
 from retrofit.report.cautioning import DEFERENCE, CautionGroup, caution_groups
 from retrofit.report.commissioning import Sheet, sheet
-from retrofit.report.front import plain
 from retrofit.report.guard import POLICY
 from retrofit.report.jobcard import Job
-from retrofit.report.page import SYSTEM_WORDS, css_string, time_text
+from retrofit.report.page import SYSTEM_WORDS, time_text
+from retrofit.report.plain import css_string, plain
 from retrofit.report.practice import Method, method
 from retrofit.study import Comparison, Entry
 from retrofit.units import UnitSystem, listed

@@ -6,7 +6,7 @@ from collections.abc import Callable
 
 from retrofit.checks.outlook import rounded_text
 from retrofit.checks.prospects import Prospect, life_of_result
-from retrofit.report.front import plain
+from retrofit.report.plain import plain
 from retrofit.report.prospect_rows import Options, assumed_text, missing_of
 from retrofit.report.table import Group, Row, Table
 from retrofit.study import Comparison

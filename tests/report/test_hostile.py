@@ -6,7 +6,7 @@ import pytest
 
 from retrofit.checks import assess
 from retrofit.report import render_html
-from retrofit.report.page import css_string
+from retrofit.report.plain import css_string
 from retrofit.study import compare
 
 HOSTILE = {
