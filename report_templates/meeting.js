@@ -14,10 +14,10 @@
   const isOpen = () => board().dataset.working || board().dataset.follows;
   const news = () => ask(`/news?seen=${isOpen() ? 0 : shown}`);
 
-  function say(text) {
+  function say(text, stays) {
     said.textContent = text;
     clearTimeout(quiet);
-    quiet = setTimeout(() => { said.textContent = ""; }, STAYS);
+    if (!stays) quiet = setTimeout(() => { said.textContent = ""; }, STAYS);
   }
 
   async function ask(url, options) {
@@ -41,6 +41,7 @@
     waiting = null;
     if (typed && typed.form === form) typed.control.abort();
     typed = button ? null : { form, control: new AbortController() };
+    if (form.action.endsWith("/freeze")) say("Writing the revision and its report…", true);
     sent = new Map([...fields(form)].map((field) => [field.id, field.value]));
     ask(form.action, { method: "POST", body: new URLSearchParams(new FormData(form, button)), signal: typed?.control.signal });
   }

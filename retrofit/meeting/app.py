@@ -11,7 +11,7 @@ from retrofit.case import laid_over
 from retrofit.errors import CaseFileError, RetrofitError
 from retrofit.meeting.board import build_board, in_sight, tables
 from retrofit.meeting.changes import change_of
-from retrofit.meeting.freeze import LONGEST_WHAT, case_text, freeze
+from retrofit.meeting.freeze import LONGEST_WHAT, case_text, freeze, whole
 from retrofit.meeting.how import how
 from retrofit.meeting.pictures import Pictures, View
 from retrofit.meeting.security import (
@@ -26,6 +26,7 @@ from retrofit.meeting.security import (
     secure,
 )
 from retrofit.meeting.session import Moment, Session
+from retrofit.meeting.years import how_of_option
 from retrofit.report import render_html
 from retrofit.report.guard import POLICY
 from retrofit.report.judging import judged
@@ -89,12 +90,15 @@ class Meeting:
         """Return how a number comes about, None if there is no such number."""
         moment = self.session.moment()
         units, view = UNIT_SYSTEMS[moment.state.units], in_sight(moment.outcome.comparison, moment.state)
+        if name.startswith("option-"):
+            told = how_of_option(view, name, quantity, units, moment.state)
+            return self._aside("meeting-how.html", is_part, moment, how=told, chart="") if told else None
         found = how(view, tables(view, units), name, quantity, units, moment.state)
         if found is None:
             return None
         place = [entry.refrigerant.designation for entry in view.entries].index(name)
         chart = self.pictures.cycle(moment.state, View(view, moment.state.units), place) if found.states else ""
-        return self._aside("meeting-how.html", is_part, moment, how=found, chart=chart, designation=name)
+        return self._aside("meeting-how.html", is_part, moment, how=found, chart=chart)
 
     def why(self, name: str, is_part: bool) -> Response | None:
         """Return what the checks found for a refrigerant, None if there is none of that name."""
@@ -116,6 +120,7 @@ class Meeting:
         """Return the report of the present state as it would be written."""
         moment, source = self.session.moment(), self.session.source
         found, state = moment.outcome.comparison, moment.state
+        found = whole(found)
         if moment.outcome.is_current:  # the case that the report carries is the one it is made from
             text = case_text(source, laid_over(source.data, dict(state.changes), state.added))
             found = replace(found, case=replace(found.case, text=text))

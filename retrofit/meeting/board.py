@@ -17,6 +17,7 @@ from retrofit.meeting.session import Moment, Refused
 from retrofit.meeting.side import Side, side_by_side
 from retrofit.meeting.state import State
 from retrofit.meeting.weighing import Weighing, weighing
+from retrofit.meeting.years import life_tables
 from retrofit.refrigerants import designations
 from retrofit.report.banding import band_text
 from retrofit.report.cautioning import DEFERENCE, CautionGroup, caution_groups
@@ -49,6 +50,7 @@ SECTIONS = {
     "cautions": "Cautions",
     "beside": "Side by side",
     "weights": "Weights",
+    "years": "Years and money",
     "numbers": "Numbers",
     "charts": "Charts",
     "hardware": "Hardware",
@@ -118,6 +120,7 @@ class Board:
     weighing: Weighing
     comparison: Table
     environment: Table
+    life: tuple[Table, ...]
     pictures: tuple[Picture, ...]
     matrices: tuple[Matrix, ...]
     notes: tuple[tuple[str, str, str], ...]
@@ -197,6 +200,7 @@ def build_board(moment: Moment, source: Source, pictures: Pictures) -> Board:
         weighing=weighing(view, state),
         comparison=comparison,
         environment=environment,
+        life=life_tables(view, units),
         pictures=pictures.pictures(state, View(view, state.units)) if outcome.is_current else (),
         matrices=matrices(view),
         notes=_notes(whole, state),

@@ -93,7 +93,7 @@ class Desk:
         self._since = 0.0
         self._last: Comparison = assess(compare(source.case, on_build), source.on)
         self._keep(State().physics, self._last)
-        self._partial = {State().physics} if _has_life(source.case) else set()
+        self._partial = {State().physics} if has_life(source.case) else set()
         threading.Thread(target=self._work, name="results", daemon=True).start()
 
     @property
@@ -143,7 +143,7 @@ class Desk:
             found = self._made(key)
             with self._door:
                 self._keep(key, found)
-                self._partial = {key} if isinstance(found, Comparison) and _has_life(found.case) else set()
+                self._partial = {key} if isinstance(found, Comparison) and has_life(found.case) else set()
                 if self._wanted == key:
                     self._wanted = None
                 self._door.notify_all()
@@ -177,8 +177,12 @@ class Desk:
             self._results.popitem(last=False)
 
 
-def _has_life(case: Case) -> bool:
-    """Say whether there is something to tell of the years that remain."""
+def has_life(case: Case) -> bool:
+    """Say whether there is something to tell of the years that remain.
+
+    Args:
+        case: The case.
+    """
     return any(table is not None for table in (case.year, case.emissions, case.money))
 
 

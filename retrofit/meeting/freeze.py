@@ -19,12 +19,13 @@ from retrofit.case.paper import MOST_REVISIONS as MOST_ROWS
 from retrofit.case.positions import KeyPath, value_spans
 from retrofit.checks import assess
 from retrofit.errors import ReportError
-from retrofit.meeting.desk import Source
+from retrofit.meeting.desk import Source, has_life
 from retrofit.meeting.state import State
 from retrofit.report import render_html, write_report
 from retrofit.report.files import write_whole
-from retrofit.study import compare
+from retrofit.study import Comparison, compare
 from retrofit.study.criteria import CRITERIA
+from retrofit.study.life import with_life
 
 LONGEST_WHAT = 200  # characters
 MOST_REVISIONS = 100
@@ -57,12 +58,21 @@ def freeze(source: Source, state: State, what: str, at: datetime) -> Frozen:
     report = path.with_suffix(".html")
     try:
         write_whole(path, case_text(source, data) + _minutes(source, state, letter, what, at))
-        result = assess(compare(read_case(path)), source.on)
+        result = whole(assess(compare(read_case(path)), source.on))
         write_report(report, render_html(result, units=state.units, made_at=at))
     except BaseException:
         path.unlink(missing_ok=True)  # both files or none
         raise
     return Frozen(letter.upper(), what, path.name, report.name)
+
+
+def whole(result: Comparison) -> Comparison:
+    """Return a result as the report shows it: with the remaining life, hour by hour and drawn, if its case asks for it.
+
+    Args:
+        result: An assessed result.
+    """
+    return with_life(result) if has_life(result.case) else result
 
 
 def _with_revision(data: Mapping[str, Any], letter: str, what: str, at: datetime) -> dict[str, Any]:

@@ -143,7 +143,7 @@ def how(
         value=value,
         formula=book.pieces(told["formula"]) if told.get("formula") and entry.duty else (),
         words=told.get("words", "" if told else NO_FORMULA),
-        inputs=tuple(_from(comparison, key, units, state) for key in keys),
+        inputs=tuple(input_from(comparison, key, units, state) for key in keys),
         states=states,
         note=note if group.name.startswith("plant") and states else "",
     )
@@ -162,7 +162,15 @@ def _catalogue(value: Value) -> str:
     return " ".join(f"{part[:1].upper()}{part[1:]}".removesuffix(".") + "." for part in parts)
 
 
-def _from(comparison: Comparison, key: str, units: UnitSystem, state: State) -> From:
+def input_from(comparison: Comparison, key: str, units: UnitSystem, state: State) -> From:
+    """Return an input behind a number.
+
+    Args:
+        comparison: The result.
+        key: Its full key. [-]
+        units: The reader's units.
+        state: The state, for where it comes from.
+    """
     case, found = comparison.case, quantity(comparison.case, key)
     default = next((item.shown_text for item in case.defaults if item.key == key), "")
     used = units.with_unit(*found, decimals=1 if found[0] == "fraction" else None) if found else ""

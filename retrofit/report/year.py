@@ -27,8 +27,9 @@ def year_basis(comparison: Comparison, units: UnitSystem) -> str:
     asked = life_of_result(comparison).asked
     if asked is None:
         return ""
+    balanced = "every hour balanced for itself" if asked.hours.max() <= 1.0 else "like hours balanced together"
     return plain(
-        "Basis: the plant as installed over a year, every hour balanced for itself, pressures floating; "
+        f"Basis: the plant as installed over a year, {balanced}, pressures floating; "
         f"{HEATED[asked.serves]} to deliver {_energy(units, asked.load_J)} {units.label('energy')}, with what "
         f"defrosting adds. Weather: {asked.source}. A new plant is sized for today's cooling at the same exchangers, "
         f"or goes by the seasonal COP of its maker.{assumed_text(comparison, ('year',))}"

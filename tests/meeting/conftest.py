@@ -13,11 +13,14 @@ ROOT = Path(__file__).resolve().parents[2]
 HOME = "http://127.0.0.1:8000"
 
 
-def case_text(candidates=("R448A", "R454C")):
-    """Return the text of the harbour market's case with a few candidates: every basis, readings, room and law."""
+def case_text(candidates=("R448A", "R454C"), has_year=True):
+    """Return the harbour market's case with a few candidates; without its year a revision is made quickly."""
     text = (ROOT / "cases" / "harbour-market.toml").read_text(encoding="utf-8")
     for line in ('recommended = "R448A"', 'fallback = "R404A"', "revisions = []"):
         text = re.sub(rf"^{line.split()[0]} = .*$", line, text, flags=re.MULTILINE)
+    if not has_year:
+        text = re.sub(r"^\[year\].*?(?=^\[emissions\])", "", text, flags=re.MULTILINE | re.DOTALL)
+        text = re.sub(r"^year\..*\n", "", text, flags=re.MULTILINE)
     return re.sub(r"candidates = \[.*?\]", "candidates = " + str(list(candidates)).replace("'", '"'), text)
 
 
@@ -59,7 +62,7 @@ class Client:
 def case_file(tmp_path):
     """Return a case file of its own for each test."""
     path = tmp_path / "market.toml"
-    path.write_text(case_text(), encoding="utf-8")
+    path.write_text(case_text(has_year=False), encoding="utf-8")
     return path
 
 

@@ -7,6 +7,7 @@ import pytest
 from retrofit.meeting import session_of
 from retrofit.meeting.desk import Desk
 from retrofit.meeting.state import State
+from tests.meeting.conftest import Client, case_text
 
 
 def warmer(number):
@@ -124,9 +125,13 @@ def test_the_remaining_life_follows_the_first_answer(desk):
     assert [entry.duty for entry in last.comparison.entries] == [entry.duty for entry in first.comparison.entries]
 
 
-def test_a_tariff_changes_money_and_no_temperature(client):
+def test_a_tariff_changes_money_and_no_temperature(tmp_path):
     """Tariff, grid factor, leak rate and life are inputs where the case has their tables; money and warming follow."""
     import time
+
+    path = tmp_path / "market.toml"
+    path.write_text(case_text(), encoding="utf-8")
+    client = Client(session_of(path))
 
     def life():
         while not (moment := client.session.moment()).outcome.is_whole:

@@ -97,3 +97,22 @@ def test_every_link_of_the_page_is_answered(watched):
 
     assert len(links) > 150
     assert [link for link in links if watched.get(link).status_code != 200] == []
+
+
+def test_numbers_of_the_years_have_an_origin_too(watched, read):
+    """Year, warming and money stand on the page once they are there; each number leads to how it is reckoned."""
+    import time
+
+    while not watched.session.moment().outcome.is_whole:
+        time.sleep(0.02)
+    page = watched.page()
+    links = sorted(set(re.findall(r'href="(/how/option-[^"]+)"', page)))
+    text = read(watched.get("/how/option-1/tewi-sum").get_data(as_text=True))[1]
+
+    for heading in ("A year of every option", "What it costs and saves"):
+        assert heading in read(page)[1]
+    assert len(links) > 40
+    assert [link for link in links if watched.get(link).status_code != 200] == []
+    assert "TEWI = GWP x leak rate x charge x years" in text
+    assert "emissions.leak_rate_after" in text
+    assert watched.get("/how/option-99/tewi-sum").status_code == 404
