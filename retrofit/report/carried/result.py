@@ -8,7 +8,6 @@ from collections.abc import Mapping
 from typing import Any
 
 from retrofit.report.machine import comparison_json
-from retrofit.report.machine_year import year_json
 from retrofit.study import Comparison
 
 DIGITS = 9  # the property tables are good to five or six
@@ -26,6 +25,9 @@ def result_of(comparison: Comparison) -> dict[str, Any]:
     found = {key: rounded(value) for key, value in comparison_json(comparison).items() if key not in NOT_PART}
     if comparison.life is None:
         return found
+    # Page one names the versions that this room gives, and the tables of the year take their words from page one.
+    from retrofit.report.machine_year import year_json
+
     return {**found, LIFE: {key: rounded(value) for key, value in year_json(comparison).items() if key not in NOT_PART}}
 
 
