@@ -83,6 +83,8 @@ def _slowed(
     """Return the operation with the speed that just delivers the load where it is a part of what the machine can."""
     needed, swept = simple.cooling_needed_W, np.asarray(machine.swept_volume_m3_per_s)
     just = balanced(balance(behaviour, machine, *starts_K, np.where(is_part, needed, np.nan), serves))
+    # A load so small that no speed balances it is met by starting and stopping, as a machine of fixed speed does.
+    is_part = is_part & ~np.isnan(just.power_W)
     speed, run_time, power = just.swept_volume_m3_per_s / swept, np.ones_like(needed), just.power_W
     lowest = compressor.lowest_speed or 0.0
     is_slow = is_part & (speed < lowest)

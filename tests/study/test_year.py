@@ -3,11 +3,12 @@
 from __future__ import annotations
 
 from dataclasses import replace
+from pathlib import Path
 
 import numpy as np
 import pytest
 
-from retrofit.case import Bin, Case
+from retrofit.case import Bin, Case, read_case
 from retrofit.case.weather import weather_of_bins
 from retrofit.properties import fluid
 from retrofit.study import compare
@@ -24,6 +25,7 @@ from retrofit.study.year import (
     year_plant,
 )
 
+CASES = Path(__file__).resolve().parents[2] / "cases"
 ALWAYS = """
 [year]
 bins = [["32 degC", 8760]]
@@ -219,6 +221,19 @@ def test_hours_without_a_solution_count_as_unmet(rack_of):
     assert "critical" in run.reason
     assert run.unmet_h >= 100
     assert np.isfinite(run.energy_J)
+
+
+def test_a_load_no_speed_balances_is_met_by_starting_and_stopping():
+    """On mild days the shipped heat pump has 3 % of its load, where its evaporator has no difference left at any speed.
+
+    It then runs part of the time, as every machine can, and no hour is lost.
+    """
+    case = read_case(CASES / "coast-heat-pump.toml")
+    run = year_of(case, "R454B")
+
+    assert run.not_solved_h == 0
+    assert run.unmet_h == 0
+    assert run.run_time_fraction < 1.0
 
 
 def test_a_new_plant_by_its_maker_takes_load_over_seasonal_cop(rack_of):
