@@ -235,3 +235,22 @@ def test_a_single_substance_has_the_base_band(case_of):
 
     assert entry.grade.word == "not checked"
     assert {name: band_of(entry, name) for name in model_band()} == {name: b.value for name, b in model_band().items()}
+
+
+def test_groups_of_many_refrigerants_are_found_at_once():
+    """Forty within one band are one group; by brute force each group of some is complete and can take nobody else."""
+    entries = [Entry(find("R134a"), "convert", "ok", None, ()) for _ in range(40)]
+    near = [1000.0 + 0.5 * i for i in range(40)]
+    far = [1000.0 * 1.06**i for i in range(12)]
+
+    assert len(groups_alike(entries, "energy", near)) == 1
+    groups = groups_alike(entries[:12], "energy", far)
+    for group in groups:
+        assert all(
+            alike(a, b, "energy", (far[_at(entries, a)], far[_at(entries, b)])) for a, b in combinations(group, 2)
+        )
+
+
+def _at(entries, entry):
+    """Return the place of the very entry given."""
+    return next(place for place, each in enumerate(entries) if each is entry)
