@@ -5,7 +5,7 @@
   const said = document.getElementById("said"), aside = document.getElementById("aside");
   const board = () => document.getElementById("board");
   const fields = (root) => root.querySelectorAll("input:not([type=hidden]), textarea, select");
-  let shown = +board().dataset.version, under = 0, typed = null, timer = 0, quiet = 0, waiting = null, sent = new Map();
+  let shown = +board().dataset.version, under = 0, typed = null, timer = 0, quiet = 0, drawing = null, waiting = null, sent = new Map();
 
   const isDirty = (field) => field.tagName === "SELECT"
     ? [...field.options].some((option) => option.selected !== option.defaultSelected) : field.value !== field.defaultValue;
@@ -87,16 +87,38 @@
     return again;
   }
 
+  // A picture that was in sight stays until the new one is drawn; they are asked for one after the other, so that the
+  // next change never waits behind them, and what is overtaken is asked for no more.
   function carryPictures(old, fresh) {
+    const late = [];
     for (const picture of fresh.querySelectorAll("img.picture")) {
       const before = old.querySelector(`#${CSS.escape(picture.id)}`), next = picture.getAttribute("src");
-      if (!before || before.getAttribute("src") === next) continue;
-      picture.src = before.getAttribute("src");
+      const shownNow = before?.getAttribute("src");
+      if (!before || shownNow === next || !before.naturalWidth) continue;
+      picture.src = shownNow;
+      picture.dataset.next = next;
       picture.classList.add("late");
-      const drawn = new Image();
-      drawn.onload = () => { if (picture.isConnected) { picture.src = next; picture.classList.remove("late"); } };
-      drawn.src = next;
+      late.push(picture);
     }
+    if (!fresh.querySelector("img.picture")) return;
+    if (drawing) drawing.src = "";
+    draw(late);
+  }
+
+  function draw(late) {
+    const picture = late.shift();
+    drawing = null;
+    if (!picture) return;
+    const image = drawing = new Image(), next = picture.dataset.next;
+    image.onload = () => {
+      if (image !== drawing) return;
+      picture.src = next;
+      picture.classList.remove("late");
+      delete picture.dataset.next;
+      draw(late);
+    };
+    image.onerror = () => { if (image === drawing) draw(late); };
+    image.src = next;
   }
 
   function markMoved(old, fresh) {

@@ -128,7 +128,7 @@ class Meeting:
         return _html(html, POLICY)
 
     def picture(self, key: str, name: str) -> Response | None:
-        """Return a chart, None if it is not there any more."""
+        """Return a chart, None if it is not there, or not any more."""
         from flask import Response
 
         svg = self.pictures.svg(key, name)
@@ -210,7 +210,7 @@ def create_app(session: Session) -> Flask:
 
     @app.get("/picture/<key>/<name>.svg")
     def picture(key: str, name: str) -> Any:
-        return meeting.picture(key, name) or abort(404)
+        return meeting.picture(key, name) or secure(Answer(status=204), "default-src 'none'")
 
     @app.get("/meeting.js")
     def script() -> Any:

@@ -59,6 +59,7 @@ class Pictures:
         self._lock = threading.Lock()
         self._pen = threading.Lock()
         self._views: OrderedDict[str, View] = OrderedDict()
+        self._newest = ""
         self._drawn: OrderedDict[tuple[str, str], str] = OrderedDict()
 
     def pictures(self, state: State, view: View) -> tuple[Picture, ...]:
@@ -73,7 +74,7 @@ class Pictures:
         names = tuple(entry.refrigerant.designation for entry in view.comparison.entries)
         key = hashlib.sha256(repr((state.physics, names, view.units)).encode()).hexdigest()[:20]
         with self._lock:
-            self._views[key] = view
+            self._views[key], self._newest = view, key
             self._views.move_to_end(key)
             while len(self._views) > MOST_VIEWS:
                 self._views.popitem(last=False)
@@ -91,7 +92,7 @@ class Pictures:
         return f"{found[0].href.rpartition('/')[0]}/cycle-{place}.svg" if found else ""
 
     def svg(self, key: str, name: str) -> str | None:
-        """Return a chart as an SVG document, None if there is none of that name or its view is too old.
+        """Return a chart as an SVG document, None if there is none of that name or its view is overtaken.
 
         Args:
             key: Of the view. [-]
@@ -102,10 +103,10 @@ class Pictures:
         if ready or view is None:
             return ready
         until = time.monotonic() + YIELD_S
-        while not self._is_idle() and time.monotonic() < until:
+        while not self._is_idle() and time.monotonic() < until and self._newest == key:
             time.sleep(0.01)
         with self._pen:
-            if key not in self._views:
+            if self._newest != key:
                 return None
             drawing = _draw(view, name)
         if drawing is None:

@@ -4,6 +4,8 @@ Run from the top of the repository: `python tests/bench/meeting_answer.py [--cha
 condensing temperature and waits until the page shows its numbers, the page's own pause after typing included and
 taken off again; charts follow by themselves and are not waited for. The yardstick, taken between the changes, is one
 state of a blend by pressure and temperature through the high-level interface of the property library.
+
+Two paces: calm, the next change when charts and years of the last are there; and hurried, half a second after it.
 """
 
 from __future__ import annotations
@@ -73,20 +75,29 @@ def main() -> None:
         page = browser.new_page(viewport={"width": 1280, "height": 900})
         page.goto(f"http://127.0.0.1:{server.server_port}/", wait_until="networkidle")
         high_level_state_s()
-        answers, states = [], []
-        for place in range(count):
+        answers: dict[str, list[float]] = {"calm": [], "hurried": []}
+        states = []
+        for place in range(2 * count):
+            pace = "calm" if place < count else "hurried"
             took_s = page.evaluate(TYPE, f"{40 + 0.1 * (place + 1):.1f} degC") / 1000.0
-            answers.append(took_s - PAUSE_S)
+            answers[pace].append(took_s - PAUSE_S)
             states.append(statistics.median(high_level_state_s() for _ in range(5)))
-            page.wait_for_timeout(1200)  # the charts of this change are drawn meanwhile, as in a meeting
+            if pace == "calm":
+                page.wait_for_selector("#board:not([data-follows]):not(:has(.late))", timeout=60_000)
+                page.wait_for_timeout(200)
+            else:
+                page.wait_for_timeout(500)
         browser.close()
         server.shutdown()
-    answer, state = statistics.median(answers), statistics.median(states)
+    state = statistics.median(states)
     print(f"candidates                      {len(CANDIDATES)}")
-    print(f"answer to a change, median      {1000 * answer:.0f} ms (allowed {1000 * ALLOWED_S:.0f})")
-    print(f"answer, 90 % within             {1000 * sorted(answers)[int(0.9 * count)]:.0f} ms")
     print(f"one high-level state of a blend {1000 * state:.1f} ms")
-    print(f"ratio                           {answer / state:.1f}")
+    for pace, taken in answers.items():
+        answer = statistics.median(taken)
+        slow = sorted(taken)[int(0.9 * len(taken))]
+        print(f"answer to a change, {pace + ',':9} median {1000 * answer:.0f} ms (allowed {1000 * ALLOWED_S:.0f})")
+        print(f"  90 % within                   {1000 * slow:.0f} ms")
+        print(f"  over one high-level state     {answer / state:.1f}")
 
 
 if __name__ == "__main__":
