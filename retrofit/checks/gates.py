@@ -24,7 +24,6 @@ from retrofit.study import Comparison, Entry, Finding, Performance
 from retrofit.study.bands import pair_band
 from retrofit.units import listed
 
-KELVIN = 273.15
 # The catalogue's short names of oil families, and the words of the case file.
 OIL_FAMILIES = {
     "MO": "mineral",

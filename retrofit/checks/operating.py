@@ -10,8 +10,7 @@ from collections.abc import Iterator
 from retrofit.checks.corners import Corner, worst
 from retrofit.checks.thresholds import Threshold, thresholds_for
 from retrofit.study import Comparison, Entry, Finding
-
-KELVIN = 273.15
+from retrofit.units import ZERO_C_K
 
 
 def limit_of(comparison: Comparison, name: str) -> Threshold:
@@ -30,7 +29,7 @@ def discharge_temperature(comparison: Comparison, entry: Entry) -> Iterator[Find
     if entry.duty is None:
         return
     limit, corner = limit_of(comparison, discharge_limit(comparison)), worst(entry, "T_discharge_K")
-    found = corner.value - KELVIN
+    found = corner.value - ZERO_C_K
     level = limit.level(found)
     if level is not None:
         yield Finding(
@@ -46,7 +45,7 @@ def discharge_temperature(comparison: Comparison, entry: Entry) -> Iterator[Find
             "model-range",
             "note",
             "Discharge beyond the range of the equation of state",
-            f"{found:.0f} °C is above {entry.T_limit_K - KELVIN:.0f} °C, up to where the equation of state of every "
+            f"{found:.0f} °C is above {entry.T_limit_K - ZERO_C_K:.0f} °C, up to where the equation of state of every "
             "component is stated to hold.",
             "The discharge temperature is an extrapolation.",
             "limits in the property library",
@@ -117,7 +116,7 @@ def near_critical(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             "near-critical",
             level,
             "Condensing near the critical temperature",
-            f"{distance:.0f} K below the critical temperature of {entry.lines.T_critical_K - KELVIN:.0f} °C"
+            f"{distance:.0f} K below the critical temperature of {entry.lines.T_critical_K - ZERO_C_K:.0f} °C"
             f"{corner.where}, against {limit.figures_in('K')}.",
             "On a hotter day capacity and COP fall fast.",
             limit.source,

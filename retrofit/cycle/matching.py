@@ -16,8 +16,8 @@ from numpy.typing import ArrayLike
 from retrofit.cycle.single_stage import Cycle, FloatArray
 from retrofit.errors import NoSolutionError, OutsideValidRangeError
 from retrofit.properties import Fluid
+from retrofit.units import ZERO_C_K
 
-KELVIN = 273.15
 CONVENTIONS = ("dew", "mean")
 MOST_STEPS = 40
 CLOSE_ENOUGH_K = 1e-10
@@ -86,20 +86,20 @@ def _check_reach(fluid: Fluid, temperatures: Temperatures) -> None:
         return
     if hottest >= fluid.T_critical_K:
         raise OutsideValidRangeError(
-            f"condensing at {hottest - KELVIN:.1f} degC is above the critical temperature of {fluid.designation}, "
-            f"{fluid.T_critical_K - KELVIN:.1f} degC: it could only give off heat as a supercritical fluid, "
+            f"condensing at {hottest - ZERO_C_K:.1f} degC is above the critical temperature of {fluid.designation}, "
+            f"{fluid.T_critical_K - ZERO_C_K:.1f} degC: it could only give off heat as a supercritical fluid, "
             "which is not computed here"
         )
     if hottest > highest:
         raise OutsideValidRangeError(
-            f"condensing at {hottest - KELVIN:.1f} degC is too close to the critical temperature of "
-            f"{fluid.designation}, {fluid.T_critical_K - KELVIN:.1f} degC: its model is used up to "
-            f"{highest - KELVIN:.1f} degC"
+            f"condensing at {hottest - ZERO_C_K:.1f} degC is too close to the critical temperature of "
+            f"{fluid.designation}, {fluid.T_critical_K - ZERO_C_K:.1f} degC: its model is used up to "
+            f"{highest - ZERO_C_K:.1f} degC"
         )
     if coldest < lowest:
         raise OutsideValidRangeError(
-            f"evaporating at {coldest - KELVIN:.1f} degC is below the range of the model of {fluid.designation}, "
-            f"which begins at {lowest - KELVIN:.1f} degC"
+            f"evaporating at {coldest - ZERO_C_K:.1f} degC is below the range of the model of {fluid.designation}, "
+            f"which begins at {lowest - ZERO_C_K:.1f} degC"
         )
 
 
@@ -153,6 +153,6 @@ def _pressure_where(
     worst = float(np.broadcast_to(T_wanted, solved.shape)[~solved].flat[0])
     lowest, highest = fluid.T_range_K
     raise NoSolutionError(
-        f"{fluid.designation}: no pressure gives a mean {what} temperature of {worst - KELVIN:.1f} degC within the "
-        f"range of its model, {lowest - KELVIN:.1f} to {highest - KELVIN:.1f} degC"
+        f"{fluid.designation}: no pressure gives a mean {what} temperature of {worst - ZERO_C_K:.1f} degC within the "
+        f"range of its model, {lowest - ZERO_C_K:.1f} to {highest - ZERO_C_K:.1f} degC"
     )

@@ -17,11 +17,11 @@ from numpy.typing import ArrayLike, NDArray
 from retrofit.cycle import Cycle, Settings, solve_cycle
 from retrofit.equipment.exchanger import Secondary, mean_difference
 from retrofit.properties import Fluid
+from retrofit.units import ZERO_C_K
 
 FloatArray = NDArray[np.float64]
 Efficiencies = Callable[[FloatArray, FloatArray], tuple[FloatArray, FloatArray]]
 
-KELVIN = 273.15
 RESIDUAL_TOLERANCE = 1e-9  # aimed at, relative; a condition counts as solved below 1e-6
 SOLVED_BELOW = 1e-6
 MOST_STEPS = 40
@@ -375,8 +375,8 @@ def _reasons(T: FloatArray, given: Mapping[str, FloatArray], lowest: float, high
     return np.select(
         [T[0] < lowest + edge, T[1] > highest - edge, T[0] > warmest - 0.5],
         [
-            f"evaporating would fall below {lowest - KELVIN:.0f} degC, where the refrigerant's model begins",
-            f"condensing would rise to {highest - KELVIN:.0f} degC, too close to the critical point",
+            f"evaporating would fall below {lowest - ZERO_C_K:.0f} degC, where the refrigerant's model begins",
+            f"condensing would rise to {highest - ZERO_C_K:.0f} degC, too close to the critical point",
             "the medium at the evaporator is not warm enough for the superheat set: the exchanger is hardly loaded",
         ],
         "no evaporating and condensing temperature satisfies both exchangers",

@@ -18,11 +18,10 @@ from numpy.typing import ArrayLike, NDArray
 from retrofit.equipment.compressor import EfficiencyMap
 from retrofit.errors import QuantityError
 from retrofit.properties import Fluid
-from retrofit.units import KINDS
+from retrofit.units import KINDS, ZERO_C_K
 
 FloatArray = NDArray[np.float64]
 
-KELVIN = 273.15
 COEFFICIENTS = 10
 NODES = 17  # along each axis: the map then meets the polynomials within 3e-5, measured over ranges of 35 K by 30 K
 LOWEST_EFFICIENCY = 0.1
@@ -120,7 +119,7 @@ def _named(attribute: str) -> str:
 
 
 def _celsius(T_K: float | np.float64) -> str:
-    return f"{float(T_K) - KELVIN:.1f} degC"
+    return f"{float(T_K) - ZERO_C_K:.1f} degC"
 
 
 def _check_coefficients(name: str, given: tuple[float, ...] | None) -> None:

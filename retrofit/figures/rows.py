@@ -11,9 +11,8 @@ from retrofit.figures.drawing import Drawing, canvas, to_svg
 from retrofit.figures.style import HAIRLINE, INK, LABEL_PT, SMALL_PT, THIN, mark_of
 from retrofit.study import Comparison, Entry
 from retrofit.study.bands import band_of, model_band, pair_band
-from retrofit.units import UnitSystem, format_number, listed
+from retrofit.units import ZERO_C_K, UnitSystem, format_number, listed
 
-KELVIN = 273.15
 ROW_IN, FRAME_IN = 0.235, 0.76
 MARGINS_IN = (0.9, 0.5, 0.26, 0.46)  # left, right, top, bottom
 ZONE = 0.42  # half the height of a row's own band [rows]
@@ -82,9 +81,9 @@ def discharge_chart(comparison: Comparison, units: UnitSystem) -> Drawing:
         ]
         for level, side in ((limits.work, "right"), (limits.stop, "left")):
             if level is not None:
-                values.append(number(level + KELVIN))
+                values.append(number(level + ZERO_C_K))
                 word = "ask the maker above" if side == "right" else "stop above"
-                _limit(axes, values[-1], f"{word} {number(level + KELVIN):.0f}", side)
+                _limit(axes, values[-1], f"{word} {number(level + ZERO_C_K):.0f}", side)
         if comparison.existing.duty is not None:
             axes.axvline(number(comparison.existing.duty.T_discharge_K), color=INK, linewidth=HAIRLINE)
         for place, entry in _rows(axes, comparison):

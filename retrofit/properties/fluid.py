@@ -14,8 +14,8 @@ from numpy.typing import ArrayLike, NDArray
 from retrofit.errors import OutsideValidRangeError
 from retrofit.properties.grid import Curve, FloatArray
 from retrofit.properties.table import Tables, greatest_subcooling
+from retrofit.units import ZERO_C_K
 
-KELVIN = 273.15
 ENDS = 1e-9  # rounding allowed at the ends of a range, relative
 DEW_SLACK_K = 0.01  # p of T and T of p are tables of their own, which agree within this
 
@@ -355,7 +355,7 @@ def _shown(value: float, unit: str) -> str:
     if not np.isfinite(value):
         return "any" if value == -np.inf else f"{value} {unit}".strip()
     if unit == "K":
-        return f"{value - KELVIN:.1f} degC ({value:.1f} K)"
+        return f"{value - ZERO_C_K:.1f} degC ({value:.1f} K)"
     if unit == "Pa":
         return f"{value / 1e5:.4g} bar"
     return f"{value:.5g} {unit}".strip()

@@ -12,12 +12,12 @@ from retrofit.errors import OutsideValidRangeError
 from retrofit.properties.fluid import Fluid
 from retrofit.refrigerants import Refrigerant
 from retrofit.refrigerants.records import Value
+from retrofit.units import ZERO_C_K
 
 ATMOSPHERE_PA = 101_325.0
 # Differences up to these are called close and fair. Our own division, after the spread of 80 blends.
 CLOSE_K = 0.7
 FAIR_K = 1.6
-KELVIN = 273.15
 
 
 @dataclass(frozen=True)
@@ -68,7 +68,7 @@ def _difference(fluid: Fluid, published: Value, *, dew: bool) -> float | None:
 
 def _rounding(*published: Value) -> float:
     """Return half a unit of the last digit printed: whole degrees only where every one of the points is whole."""
-    celsius = [value.number - KELVIN for value in published if value.number is not None]
+    celsius = [value.number - ZERO_C_K for value in published if value.number is not None]
     return 0.5 if all(abs(point - round(point)) < 1e-6 for point in celsius) else 0.05
 
 

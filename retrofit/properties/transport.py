@@ -20,9 +20,9 @@ from numpy.typing import NDArray
 
 from retrofit.properties.components import Mixture
 from retrofit.properties.grid import Curve, FloatArray, Surface
+from retrofit.units import ZERO_C_K
 
 Positions = NDArray[np.intp]
-KELVIN = 273.15
 PRESSURES, SUPERHEATS = 30, 13  # nodes of the vapour surface: its error is below 0.1 %, near the critical point 1 %
 # Some models find no solution in thin vapour. Below this share of the critical density the viscosity is within
 # about 5 % of its value at vanishing density, which is taken instead.
@@ -200,5 +200,5 @@ def viscosity_gaps(components: Components, liquid_ends_at_K: float, whole: bool)
         return (f"the property library has no viscosity model for {' and '.join(missing)}",)
     if above := components.above_critical(liquid_ends_at_K):
         name, T = min(above, key=lambda one: one[1])
-        return (f"a liquid viscosity above {T - KELVIN:.1f} degC, the critical temperature of {name}, has no rule",)
+        return (f"a liquid viscosity above {T - ZERO_C_K:.1f} degC, the critical temperature of {name}, has no rule",)
     return ("the property library's viscosity models do not reach over the whole range",)

@@ -7,8 +7,8 @@ from typing import Any
 
 from retrofit.refrigerants import GWP_BASES, Refrigerant, Value, cautions_for, source
 from retrofit.report.text_table import Column, paragraph, text_table
+from retrofit.units import ZERO_C_K
 
-KELVIN = 273.15
 NOT_STATED = "not stated"
 # What a person reads for each field, and how its number is written.
 FIELDS = (
@@ -162,7 +162,7 @@ def _celsius(value: Value) -> str:
     """Return a boiling point with the digits its source prints."""
     if value.number is None:
         return "–"
-    return marked(f"{round(value.number - KELVIN, 2):g}".replace("-", "−"), value)
+    return marked(f"{round(value.number - ZERO_C_K, 2):g}".replace("-", "−"), value)
 
 
 def refrigerant_text(item: Refrigerant, columns: int, strong: Callable[[str], str]) -> str:
@@ -201,7 +201,7 @@ def _detail_row(label: str, value: Value, form: str) -> list[str]:
         shown = value.status or NOT_STATED
     elif value.number is not None:
         in_celsius = "°C" in label
-        number = value.number - KELVIN if in_celsius else value.number * (1e3 if "g/mol" in label else 1.0)
+        number = value.number - ZERO_C_K if in_celsius else value.number * (1e3 if "g/mol" in label else 1.0)
         shown = form.format(number).replace("-", "−") if form else gwp_text(value)
         shown += f" ({value.status})" if value.status else ""
     else:

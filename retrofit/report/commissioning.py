@@ -8,14 +8,14 @@ from dataclasses import dataclass, replace
 
 from retrofit.checks.operating import discharge_limit, limit_of
 from retrofit.refrigerants import GWP_BASES, is_flammable
-from retrofit.report.jobcard import KELVIN, UNKNOWN, Job, span
+from retrofit.report.jobcard import UNKNOWN, Job, span
 from retrofit.report.judging import spelled
 from retrofit.report.values import potential_text
 from retrofit.study.bands import QUANTITIES, bands_of
 from retrofit.study.changeover import Expected, PressureRow, Window, operating_span, pressure_rows
 from retrofit.study.hardware.settings import SET_POINTS
 from retrofit.study.practice import practice
-from retrofit.units import MISSING
+from retrofit.units import MISSING, ZERO_C_K
 
 MOST_ROWS, COLUMNS = 96, 4  # rows of the pressure-temperature table, and how many parts stand side by side
 STEPS = {"si": (1.0, 2.0, 5.0), "ip": (2.0, 4.0, 10.0)}  # in the reader's degrees
@@ -183,7 +183,7 @@ def _range(job: Job, name: str) -> str:
 def _targets(job: Job) -> tuple[Target, ...]:
     case, units = job.comparison.case, job.units
     duty, limit = case.duty, limit_of(job.comparison, discharge_limit(job.comparison))
-    work, stop = (units.text("temperature", (end or 0.0) + KELVIN, decimals=0) for end in (limit.work, limit.stop))
+    work, stop = (units.text("temperature", (end or 0.0) + ZERO_C_K, decimals=0) for end in (limit.work, limit.stop))
     taken = [
         units.with_unit("temperature difference", value)
         for value in (duty.useful_superheat_K, duty.useful_superheat_K + duty.line_superheat_K, duty.subcooling_K)

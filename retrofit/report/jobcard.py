@@ -10,9 +10,8 @@ from retrofit.report.judging import spelled
 from retrofit.study import Comparison, Component, Entry
 from retrofit.study.changeover import Changeover
 from retrofit.study.practice import Figure, practice
-from retrofit.units import UnitSystem, listed, stacked
+from retrofit.units import ZERO_C_K, UnitSystem, listed, stacked
 
-KELVIN = 273.15
 MICRON_PA = 0.133322  # a thousandth of a millimetre of mercury
 WATER_KG_PER_M3 = 1000.0  # what the water capacity of a cylinder is stamped by
 PER_VOLUME = {"si": "kg a litre", "ip": "lb a pound of water capacity"}
@@ -336,7 +335,7 @@ def _start(job: Job) -> Made:
     comparison, units = job.comparison, job.units
     discharge = limit_of(comparison, discharge_limit(comparison))
     watch, stop = (
-        units.with_unit("temperature", (end or 0.0) + KELVIN, decimals=0) for end in (discharge.work, discharge.stop)
+        units.with_unit("temperature", (end or 0.0) + ZERO_C_K, decimals=0) for end in (discharge.work, discharge.stop)
     )
     rated = comparison.case.compressor.rated_current_A
     lines = (

@@ -7,11 +7,11 @@ from dataclasses import dataclass
 
 from retrofit.checks.changeover import Chosen, changeover_of
 from retrofit.checks.operating import discharge_limit, limit_of
-from retrofit.report.jobcard import KELVIN, UNKNOWN, Card, Job, card, span
+from retrofit.report.jobcard import UNKNOWN, Card, Job, card, span
 from retrofit.report.judging import spelled
 from retrofit.study import Comparison
 from retrofit.study.practice import Figure, practice, practice_figures
-from retrofit.units import UnitSystem, listed
+from retrofit.units import ZERO_C_K, UnitSystem, listed
 
 
 @dataclass(frozen=True)
@@ -90,7 +90,7 @@ def _told(figure: Figure) -> str:
 
 def _go_back_if(comparison: Comparison, units: UnitSystem) -> tuple[str, ...]:
     limit = limit_of(comparison, discharge_limit(comparison))
-    stop = units.with_unit("temperature", (limit.stop or 0.0) + KELVIN, decimals=0)
+    stop = units.with_unit("temperature", (limit.stop or 0.0) + ZERO_C_K, decimals=0)
     return (
         f"the discharge line stays above {stop} after trimming;",
         "the current stays above the rated one, or a safety control keeps tripping;",
@@ -144,7 +144,7 @@ def _after_care(comparison: Comparison, found: Sequence[Job], units: UnitSystem)
     again, months = practice("drier_again"), practice("leak_check_after_repair").low
     oil = span(*(f"{share:.0%}" for share in sorted(limit_of(comparison, "residual_oil").figures.values())))
     discharge = limit_of(comparison, discharge_limit(comparison))
-    hot = units.with_unit("temperature", (discharge.work or 0.0) + KELVIN, decimals=0)
+    hot = units.with_unit("temperature", (discharge.work or 0.0) + ZERO_C_K, decimals=0)
     blends = [job.new for job in found if len(job.entry.refrigerant.composition) > 1]
     rows = [
         Care("Readings of the commissioning sheet", "1 h, 24 h, 1 week, 1 month, first hot day"),

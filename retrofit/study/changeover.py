@@ -22,8 +22,8 @@ from retrofit.study.practice import practice
 from retrofit.study.result import Comparison, Entry, Performance
 from retrofit.study.saturation import saturation_table
 from retrofit.study.today import today_of
+from retrofit.units import ZERO_C_K
 
-KELVIN = 273.15
 LITRE_M3 = 1e-3
 CLOSE_K = 0.01
 SAME_DAY_K = 0.05
@@ -205,14 +205,14 @@ def recovery(case: Case) -> Recovery:
         case: The case.
     """
     charge, fill = case.plant.charge_kg, practice("cylinder_fill").low
-    T_K = practice("cylinder_temperature").low + KELVIN
+    T_K = practice("cylinder_temperature").low + ZERO_C_K
     try:
         behaviour = fluid(case.plant.refrigerant)
     except RetrofitError as error:
         return Recovery(charge, T_K, fill, None, (), error.message)
     full = vessel_fill(behaviour, T_K, 1.0, charge or 0.0, fill)
     if not full.is_liquid:
-        gone = f"the model of {behaviour.designation} has no liquid at {T_K - KELVIN:.0f} °C; go by the mass stamped"
+        gone = f"the model of {behaviour.designation} has no liquid at {T_K - ZERO_C_K:.0f} °C; go by the mass stamped"
         return Recovery(charge, T_K, fill, None, (), gone)
     per_volume = float(full.largest_charge_kg)
     if charge is None:

@@ -6,8 +6,8 @@ import numpy as np
 
 from retrofit.properties import Fluid
 from retrofit.study.result import ChartLines, EnthalpyZero
+from retrofit.units import ZERO_C_K
 
-KELVIN = 273.15
 IIR_H_J_PER_KG, IIR_S_J_PER_KGK = 200e3, 1e3
 
 
@@ -36,7 +36,7 @@ def chart_lines(behaviour: Fluid, count: int = 90) -> ChartLines:
 
 def _iir_zero(behaviour: Fluid) -> EnthalpyZero:
     """Return the zero by which saturated liquid at 0 degC has h = 200 kJ/kg and s = 1 kJ/(kg K)."""
-    h, s = _liquid_at(behaviour, KELVIN)
+    h, s = _liquid_at(behaviour, ZERO_C_K)
     if h is None or s is None:
         return _own_zero(behaviour)
     name = "IIR reference: h = 200 kJ/kg and s = 1 kJ/(kg K) for saturated liquid at 0 °C"
@@ -45,7 +45,7 @@ def _iir_zero(behaviour: Fluid) -> EnthalpyZero:
 
 def _minus_forty_zero(behaviour: Fluid) -> EnthalpyZero:
     """Return the zero by which saturated liquid at -40 (degC and degF alike) has h = 0 and s = 0."""
-    h, s = _liquid_at(behaviour, KELVIN - 40.0)
+    h, s = _liquid_at(behaviour, ZERO_C_K - 40.0)
     if h is None or s is None:
         return _own_zero(behaviour)
     return EnthalpyZero("h = 0 and s = 0 for saturated liquid at −40 °F", h, s)
@@ -55,7 +55,7 @@ def _own_zero(behaviour: Fluid) -> EnthalpyZero:
     """Return a zero at the lowest temperature of the model, where no usual reference lies in its range."""
     T = behaviour.T_range_K[0]
     bubble = behaviour.bubble(behaviour.p_bubble(T))
-    name = f"h = 0 and s = 0 for saturated liquid at {T - KELVIN:.1f} °C, the lowest temperature of the model"
+    name = f"h = 0 and s = 0 for saturated liquid at {T - ZERO_C_K:.1f} °C, the lowest temperature of the model"
     return EnthalpyZero(name, float(bubble.h_J_per_kg), float(bubble.s_J_per_kgK))
 
 

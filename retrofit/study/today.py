@@ -19,8 +19,7 @@ from retrofit.study.hardware.conditions import Site, cycle_between
 from retrofit.study.installed import EfficiencyModel, ExistingPlant, Pair, efficiency_model, existing_plant
 from retrofit.study.performance import performance
 from retrofit.study.result import FloatArray
-
-KELVIN = 273.15
+from retrofit.units import ZERO_C_K
 
 
 @dataclass(frozen=True)
@@ -136,7 +135,7 @@ def _check_subcooling(case: Case) -> None:
     duty = case.duty
     liquid_K = np.asarray(duty.T_cond_K - duty.subcooling_K)
     if np.all(liquid_K <= duty.T_evap_K):
-        liquid, evaporator = (f"{float(np.max(T_K)) - KELVIN:.1f} degC" for T_K in (liquid_K, duty.T_evap_K))
+        liquid, evaporator = (f"{float(np.max(T_K)) - ZERO_C_K:.1f} degC" for T_K in (liquid_K, duty.T_evap_K))
         raise OutsideValidRangeError(
             f"with {float(np.min(duty.subcooling_K)):g} K of subcooling the liquid at the expansion valve, {liquid}, "
             f"would be no warmer than the evaporator, {evaporator}; give less subcooling"

@@ -26,7 +26,7 @@ from retrofit.units.showing import (
     format_number,
     stacked,
 )
-from retrofit.units.table import KINDS, Kind, Unit
+from retrofit.units.table import KINDS, ZERO_C_K, Kind, Unit
 from retrofit.units.words import close_to, described, listed, quoted, shown
 
 __all__ = [
@@ -39,6 +39,7 @@ __all__ = [
     "STANDARD_ATMOSPHERE_PA",
     "THOUSANDS_MARK",
     "UNIT_SYSTEMS",
+    "ZERO_C_K",
     "Display",
     "Kind",
     "Pressure",

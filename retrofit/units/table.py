@@ -18,7 +18,7 @@ INCH_M = 0.0254
 POUND_KG = 0.453_592_37
 STANDARD_GRAVITY_M_PER_S2 = 9.806_65
 BTU_J = 1055.055_852_62  # International Table Btu: 1 Btu/lb = 2326 J/kg exactly
-ZERO_CELSIUS_K = 273.15
+ZERO_C_K = 273.15
 ZERO_FAHRENHEIT_R = 459.67
 RANKINE_K = 5.0 / 9.0
 HOUR_S = 3600.0
@@ -64,7 +64,7 @@ class Kind:
         return f'write it with {self.shown}, such as "{self.example}"'
 
 
-CELSIUS = Unit(1.0, ZERO_CELSIUS_K)
+CELSIUS = Unit(1.0, ZERO_C_K)
 FAHRENHEIT = Unit(RANKINE_K, ZERO_FAHRENHEIT_R)
 KELVIN = Unit(1.0)
 RANKINE = Unit(RANKINE_K)

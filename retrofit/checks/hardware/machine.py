@@ -6,9 +6,10 @@ from collections.abc import Iterator
 
 from retrofit.checks.corners import worst
 from retrofit.checks.gates import cooling_reached
-from retrofit.checks.hardware.rows import KELVIN, Bound, Matter, View, judged, performance_measure, stated
+from retrofit.checks.hardware.rows import Bound, Matter, View, judged, performance_measure, stated
 from retrofit.checks.operating import discharge_limit, motor_load
 from retrofit.study import Component, Measure
+from retrofit.units import ZERO_C_K
 
 
 def discharge(view: View) -> Iterator[Component]:
@@ -19,11 +20,11 @@ def discharge(view: View) -> Iterator[Component]:
         performance_measure(view, "Discharge temperature, design point", "temperature", "T_discharge_K"),
         performance_measure(view, "Discharge temperature, hottest day", "temperature", "T_discharge_K", "hottest"),
     )
-    fact = f"The discharge reaches {corner.value - KELVIN:.0f} °C{corner.where}."
+    fact = f"The discharge reaches {corner.value - ZERO_C_K:.0f} °C{corner.where}."
     ask = "Highest discharge temperature that the maker allows with this refrigerant and oil; head cooling, injection."
     matter = Matter("discharge-temperature", "Compressor, discharge temperature", fact, measures, (bound,), ask)
     # The reading of the limit itself, so that today's refrigerant, too, is judged.
-    yield judged(matter, [bound.level(corner.value - KELVIN)], [new.missing["hottest"]])
+    yield judged(matter, [bound.level(corner.value - ZERO_C_K)], [new.missing["hottest"]])
 
 
 def ratio(view: View) -> Iterator[Component]:

@@ -4,9 +4,10 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
-from retrofit.checks.hardware.rows import KELVIN, Bound, Matter, View, judged, stated
+from retrofit.checks.hardware.rows import Bound, Matter, View, judged, stated
 from retrofit.refrigerants import Refrigerant, find
 from retrofit.study import Component, Measure
+from retrofit.units import ZERO_C_K
 
 CHLORINATED = ("CFC", "HCFC", "HCFO", "chloroalkene")
 AMMONIA, IODIDE = "R717", "R13I1"
@@ -54,7 +55,7 @@ def receiver(view: View) -> Iterator[Component]:
         return
     share = filling.receiver_share
     measures = (Measure("Fill with the whole charge", "fraction", share.old, share.new),)
-    fact = f"The whole charge fills {share.new:.0%} of it at {filling.T_receiver_K - KELVIN:.0f} °C"
+    fact = f"The whole charge fills {share.new:.0%} of it at {filling.T_receiver_K - ZERO_C_K:.0f} °C"
     level, today = bound.level(share.new), bound.level(share.old)
     if level == "stop" and today == "stop":
         # It does not hold today's charge either, so another refrigerant is no reason to change it.

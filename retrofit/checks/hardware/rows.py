@@ -10,7 +10,6 @@ from retrofit.checks.thresholds import Threshold
 from retrofit.study import Comparison, Component, Entry, Finding, Measure
 from retrofit.study.hardware.numbers import HardwareNumbers, OldNew
 
-KELVIN = 273.15
 VERDICTS: Mapping[str | None, str] = {"stop": "replace", "work": "adjust", "note": "keep", None: "keep"}
 PHYSICS = "physics"
 

@@ -15,8 +15,7 @@ from retrofit.properties import Fluid
 from retrofit.study.installed import EfficiencyModel, ExistingPlant
 from retrofit.study.performance import as_numbers, at_swept_volume, performance
 from retrofit.study.result import Installed, Performance
-
-KELVIN = 273.15
+from retrofit.units import ZERO_C_K
 
 
 @dataclass(frozen=True)
@@ -89,7 +88,7 @@ def hottest_day(site: Site, behaviour: Fluid, installed: Installed | None) -> Fo
             raise NoSolutionError(f"{behaviour.designation} in the plant as installed: {installed.hottest_reason}")
         return Found(installed.hottest)
     except (NoSolutionError, OutsideValidRangeError) as error:
-        return Found(None, f"with {inlet_K - KELVIN:.0f} °C at the condenser there is no solution: {error.message}")
+        return Found(None, f"with {inlet_K - ZERO_C_K:.0f} °C at the condenser there is no solution: {error.message}")
 
 
 def hottest_inlet_K(case: Case) -> float | None:
@@ -158,7 +157,7 @@ def standstill_pressure(case: Case, behaviour: Fluid) -> tuple[float | None, str
     rest = standstill(behaviour, T_K)
     if np.isfinite(rest.p_Pa):
         return float(rest.p_Pa), ""
-    where = f"{T_K - KELVIN:.0f} °C, against a critical temperature of {behaviour.T_critical_K - KELVIN:.0f} °C"
+    where = f"{T_K - ZERO_C_K:.0f} °C, against a critical temperature of {behaviour.T_critical_K - ZERO_C_K:.0f} °C"
     if rest.is_above_critical:
         return None, f"no liquid at {where}: charge and volume set the pressure at rest"
     return None, f"the model has no bubble pressure at {where}"
