@@ -5,7 +5,7 @@ from retrofit.figures.drawing import Drawing
 from retrofit.figures.maps import map_chart
 from retrofit.figures.payback import payback_chart
 from retrofit.figures.rows import change_charts, discharge_chart, pressure_chart
-from retrofit.figures.style import COLOURS, INK, Mark, mark_of
+from retrofit.figures.style import COLOURS, INK, Mark, mark_at, mark_of
 from retrofit.figures.tornado import tornado_chart
 from retrofit.figures.warming import warming_chart
 from retrofit.figures.year import ambient_chart, energy_chart
@@ -21,6 +21,7 @@ __all__ = [
     "discharge_chart",
     "energy_chart",
     "map_chart",
+    "mark_at",
     "mark_of",
     "overlay_charts",
     "overlay_count",

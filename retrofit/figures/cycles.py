@@ -9,7 +9,7 @@ import numpy as np
 from retrofit.figures.drawing import Drawing, canvas, to_svg
 from retrofit.figures.labels import spread
 from retrofit.figures.scales import enthalpies, limit_line, log_ticks, temperature_ticks
-from retrofit.figures.style import HAIRLINE, INK, LABEL_PT, THIN, mark_of
+from retrofit.figures.style import HAIRLINE, INK, LABEL_PT, THIN, mark_at
 from retrofit.study import ChartLines, Comparison, Entry
 from retrofit.units import UnitSystem
 
@@ -75,7 +75,7 @@ def _overlay(comparison: Comparison, group: list[Placed], units: UnitSystem, num
     with canvas(4.6, 0.56, 1.12, 0.08, 0.44) as figure:
         axes = _axes(figure, units, box)
         for place, entry in group:
-            mark = mark_of(place)
+            mark = mark_at(comparison, place)
             assert entry.lines is not None
             _dome(axes, entry.lines, units, mark.colour, HAIRLINE if place else THIN)
             h, p = _closed(entry, units)
@@ -85,7 +85,7 @@ def _overlay(comparison: Comparison, group: list[Placed], units: UnitSystem, num
         if group[0][0] == 0:
             assert group[0][1].lines is not None
             temperature_ticks(axes, group[0][1].lines, units, _pressures(group[0][1], units), limit)
-        _end_labels(axes, group, units)
+        _end_labels(axes, comparison, group, units)
         name = f"overlay-{number + 1}"
         title = f"Pressure-enthalpy chart with the cycles of {names}"
         described = "; ".join(_cycle_words(entry, units) for _, entry in group)
@@ -110,7 +110,7 @@ def cycle_chart(comparison: Comparison, place: int, units: UnitSystem) -> Drawin
     entry = comparison.entries[place]
     if entry.lines is None:
         return None
-    mark, label, box = mark_of(place), entry.refrigerant.display_name, _limits([entry], units)
+    mark, label, box = mark_at(comparison, place), entry.refrigerant.display_name, _limits([entry], units)
     with canvas(3.4, 0.56, 0.08, 0.08, 0.44) as figure:
         axes = _axes(figure, units, box)
         _dome(axes, entry.lines, units, mark.colour, THIN)
@@ -202,7 +202,7 @@ def _clusters(items: list[tuple[float, int]], near: float) -> list[list[tuple[fl
     return clusters
 
 
-def _end_labels(axes: Any, group: list[Placed], units: UnitSystem) -> None:
+def _end_labels(axes: Any, comparison: Comparison, group: list[Placed], units: UnitSystem) -> None:
     """Name each cycle in the margin, with a hairline to its discharge point; spread so that no two touch."""
     ends = []
     for place, entry in group:
@@ -213,7 +213,7 @@ def _end_labels(axes: Any, group: list[Placed], units: UnitSystem) -> None:
     wanted = [(np.log(p) - low) / (high - low) for p, *_ in ends]
     heights = spread(wanted, 0.055)
     for (p_end, h_end, place, label), height in zip(ends, heights, strict=True):
-        mark = mark_of(place)
+        mark = mark_at(comparison, place)
         axes.annotate(
             label,
             (h_end, p_end),

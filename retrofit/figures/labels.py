@@ -6,7 +6,7 @@ from collections.abc import Sequence
 from typing import Any
 
 from retrofit.checks.prospects import KEPT, Prospect
-from retrofit.figures.style import HAIRLINE, INK, LABEL_PT, SMALL_PT, THIN, Mark, mark_of
+from retrofit.figures.style import HAIRLINE, INK, LABEL_PT, SMALL_PT, THIN, Mark, mark_at
 from retrofit.study import Comparison
 from retrofit.units import format_number
 
@@ -41,7 +41,7 @@ def mark_in(comparison: Comparison, option: Prospect) -> Mark:
         comparison: The result.
         option: The option.
     """
-    found = mark_of(comparison.entries.index(option.entry))
+    found = mark_at(comparison, comparison.entries.index(option.entry))
     return Mark(found.colour, "X", (0, (2, 1.5)), THIN) if option.deed == KEPT else found
 
 

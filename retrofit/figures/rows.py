@@ -8,7 +8,7 @@ from typing import Any
 
 from retrofit.checks import threshold
 from retrofit.figures.drawing import Drawing, canvas, to_svg
-from retrofit.figures.style import HAIRLINE, INK, LABEL_PT, SMALL_PT, THIN, mark_of
+from retrofit.figures.style import HAIRLINE, INK, LABEL_PT, SMALL_PT, THIN, mark_at
 from retrofit.study import Comparison, Entry
 from retrofit.study.bands import band_of, model_band, pair_band
 from retrofit.units import ZERO_C_K, UnitSystem, format_number, listed
@@ -38,7 +38,7 @@ def pressure_chart(comparison: Comparison, units: UnitSystem) -> Drawing:
         for place, entry in _rows(axes, comparison):
             if entry.duty is None:
                 continue
-            mark, ends = mark_of(place), (gauge(entry.duty.p_evap_Pa), gauge(entry.duty.p_cond_Pa))
+            mark, ends = mark_at(comparison, place), (gauge(entry.duty.p_evap_Pa), gauge(entry.duty.p_cond_Pa))
             axes.plot(ends, (place, place), color=mark.colour, linewidth=mark.width * 0.7)
             axes.plot(ends, (place, place), mark.marker, color=mark.colour, markersize=5.5, linestyle="none")
             for value, column in zip(ends, PAIR, strict=True):
@@ -89,7 +89,7 @@ def discharge_chart(comparison: Comparison, units: UnitSystem) -> Drawing:
         for place, entry in _rows(axes, comparison):
             if entry.duty is None:
                 continue
-            mark, T, band = mark_of(place), entry.duty.T_discharge_K, _discharge_band(entry)
+            mark, T, band = mark_at(comparison, place), entry.duty.T_discharge_K, _discharge_band(entry)
             axes.plot((number(T - band), number(T + band)), (place, place), color=mark.colour, linewidth=THIN)
             axes.plot([number(T)], [place], mark.marker, color=mark.colour, markersize=6)
             _margin_value(axes, place, f"{number(T):.0f}")
@@ -192,7 +192,7 @@ def _panel(axes: Any, comparison: Comparison, panel: Panel, band: float) -> list
     for place, entry in _rows(axes, comparison):
         if panel.ratio in entry.relative:
             values += _own_zone(axes, place, 100.0 * _panel_band(comparison, entry, panel), band)
-            mark, value = mark_of(place), 100 * (entry.relative[panel.ratio] - 1.0)
+            mark, value = mark_at(comparison, place), 100 * (entry.relative[panel.ratio] - 1.0)
             values.append(value)
             axes.plot([value], [place], mark.marker, color=mark.colour, markersize=6)
             _value(axes, value, place, format_number(value, 0, signed=True), -1 if value < 0 else 1)

@@ -5,6 +5,8 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import Any
 
+from retrofit.study import Comparison
+
 # Black stands for the colour of the page's own text, light or dark; see drawing.py.
 INK = "#000000"
 # Blue, vermillion, bluish green and reddish purple of Okabe and Ito, "Color Universal Design" (2002, 2008): the
@@ -67,3 +69,13 @@ def mark_of(position: int) -> Mark:
     turn, place = divmod(position - 1, len(COLOURS))
     dash = DASHES[(place + turn) % len(DASHES)]
     return Mark(COLOURS[place], MARKERS[(position - 1) % len(MARKERS)], dash, LINE)
+
+
+def mark_at(comparison: Comparison, place: int) -> Mark:
+    """Return the mark of a refrigerant of a result, the same in every part of one comparison.
+
+    Args:
+        comparison: The result.
+        place: 0 for the existing refrigerant, then the candidates in order. [-]
+    """
+    return mark_of(comparison.places.get(comparison.entries[place].refrigerant.designation, place))

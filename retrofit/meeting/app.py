@@ -89,7 +89,7 @@ class Meeting:
     def how(self, name: str, quantity: str, is_part: bool) -> Response | None:
         """Return how a number comes about, None if there is no such number."""
         moment = self.session.moment()
-        units, view = UNIT_SYSTEMS[moment.state.units], in_sight(moment.outcome.comparison, moment.state)
+        units, view = UNIT_SYSTEMS[moment.state.units], in_sight(moment)
         if name.startswith("option-"):
             told = how_of_option(view, name, quantity, units, moment.state)
             return self._aside("meeting-how.html", is_part, moment, how=told, chart="") if told else None

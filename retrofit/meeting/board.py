@@ -6,7 +6,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass, replace
 
 from retrofit.checks import not_checked
-from retrofit.figures import mark_of
+from retrofit.figures import mark_at
 from retrofit.meeting.changes import MEETING
 from retrofit.meeting.desk import Source
 from retrofit.meeting.freeze import Frozen
@@ -128,16 +128,17 @@ class Board:
     not_checked: tuple[str, ...]
 
 
-def in_sight(comparison: Comparison, state: State) -> Comparison:
-    """Return the result with the candidates that are shown, pinned ones first; no number changes.
+def in_sight(moment: Moment) -> Comparison:
+    """Return the result with the candidates that are shown, pinned ones first; no number and no mark changes.
 
     Args:
-        comparison: The whole result.
-        state: The state.
+        moment: State and whole result.
     """
+    comparison, state = moment.outcome.comparison, moment.state
     by_name = {entry.refrigerant.designation: entry for entry in comparison.candidates}
     order = [name for name in (*state.pinned, *by_name) if name in by_name and name not in state.hidden]
-    return replace(comparison, candidates=tuple(by_name[name] for name in dict.fromkeys(order)))
+    candidates = tuple(by_name[name] for name in dict.fromkeys(order))
+    return replace(comparison, candidates=candidates, places=moment.places)
 
 
 def tables(view: Comparison, units: UnitSystem) -> tuple[Table, Table]:
@@ -160,7 +161,7 @@ def build_board(moment: Moment, source: Source, pictures: Pictures) -> Board:
         pictures: Where charts are drawn.
     """
     state, outcome, whole = moment.state, moment.outcome, moment.outcome.comparison
-    units, view = UNIT_SYSTEMS[state.units], in_sight(whole, state)
+    units, view = UNIT_SYSTEMS[state.units], in_sight(moment)
     every, _ = judged(whole)
     by_name = {e.refrigerant.designation: item for e, item in zip(whole.entries, every, strict=True)}
     comparison, environment = tables(view, units)
@@ -230,7 +231,7 @@ def _players(view: Comparison, state: State, by_name: Mapping[str, Judged], tabl
     notes = dict(state.notes)
 
     def player(place: int, entry: Entry) -> Player:
-        name, mark = entry.refrigerant.designation, mark_of(place)
+        name, mark = entry.refrigerant.designation, mark_at(view, place)
         return Player(
             designation=name,
             judged=by_name[name],

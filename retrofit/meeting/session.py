@@ -39,6 +39,7 @@ class Moment:
         undo, redo: In words what can be undone and done again; empty if nothing.
         refused: What was refused last, by input; "" for what belongs to none.
         frozen: The revisions written so far.
+        places: Place of each refrigerant in the order in which it came into the meeting; its mark follows from it.
     """
 
     version: int
@@ -48,6 +49,7 @@ class Moment:
     redo: str
     refused: Mapping[str, Refused]
     frozen: tuple[Frozen, ...]
+    places: Mapping[str, int]
 
 
 Change = Callable[[State, State, Mapping[str, str]], tuple[State, str]]
@@ -63,6 +65,8 @@ class Session:
         self._history = History(State(units=units))
         self._refused: dict[str, Refused] = {}
         self._frozen: tuple[Frozen, ...] = ()
+        names = (source.case.plant.refrigerant, *source.case.compare.candidates)
+        self._places = {name: place for place, name in enumerate(names)}
 
     @property
     def version(self) -> int:
@@ -109,6 +113,8 @@ class Session:
             self._refused[""] = Refused("", str(error))
         else:
             self._history.add(after, what)
+            for name in after.added:
+                self._places.setdefault(name, len(self._places))
             return True
         return False
 
@@ -153,7 +159,7 @@ class Session:
         for _ in range(3):
             with self._lock:
                 version, state, history = self._history.version, self._history.now, self._history
-                words = (history.undoable, history.redoable, dict(self._refused), self._frozen)
+                words = (history.undoable, history.redoable, dict(self._refused), self._frozen, dict(self._places))
             found = Moment(version, state, self.desk.outcome(state), *words)
             if found.outcome.is_current or version == self.version:
                 break

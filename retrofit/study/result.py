@@ -333,6 +333,7 @@ class Comparison:
         baseline: How the plant runs today, None if the case has no readings.
         law: Jurisdiction, day and tables behind what is said of law; None if the case names no jurisdiction.
         life: Year, emissions, money and how sure they are; None until asked for.
+        places: Where a part of a comparison is shown, the place of each refrigerant in the whole; empty for the whole.
     """
 
     case: Case
@@ -344,6 +345,7 @@ class Comparison:
     baseline: Baseline | None = None
     law: LawBasis | None = None
     life: Life | None = None
+    places: Mapping[str, int] = field(default_factory=dict)
 
     @property
     def entries(self) -> tuple[Entry, ...]:

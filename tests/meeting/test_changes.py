@@ -4,6 +4,8 @@ import re
 
 import pytest
 
+from retrofit.meeting.board import build_board
+
 
 def field(html, key):
     """Return the value that stands in an input."""
@@ -246,7 +248,7 @@ def test_units_change_every_number_and_nothing_else(client):
 
     assert "°F" in page
     assert "psig" in page
-    assert client.session.moment().outcome.comparison is before
+    assert client.session.moment().outcome.comparison.entries == before.entries
 
 
 def test_an_unknown_act_is_told_in_words(client):
@@ -254,3 +256,21 @@ def test_an_unknown_act_is_told_in_words(client):
     for act in ("", "explode", "hide", "hide R11", "pin ../../etc/passwd", "nudge duty.cooling +9", "units furlongs"):
         assert client.post(act).status_code == 303
     assert client.state.hidden == ()
+
+
+def test_a_refrigerant_keeps_its_mark(client):
+    """Hidden, pinned, added or taken away: no refrigerant takes over the mark of another."""
+
+    def marks(act, **fields):
+        client.change(act, **fields)
+        board = build_board(client.session.moment(), client.session.source, client.app.extensions["meeting"].pictures)
+        return {player.designation: (player.marker, player.colour) for player in board.players}
+
+    first = marks("add", designation="R449A") | marks("add", designation="R407A")
+    hidden, dropped = marks("hide R448A"), marks("drop R449A")
+    back = marks("pin R407A") | marks("add", designation="R407H")
+
+    assert len(set(first.values())) == 5
+    for found in (hidden, dropped, back):
+        assert {name: first[name] for name in found if name in first} == {n: m for n, m in found.items() if n in first}
+    assert back["R407H"] not in first.values()
