@@ -85,6 +85,7 @@ EFFICIENCIES = ("compressor.isentropic_efficiency", "compressor.volumetric_effic
 LONGEST_INPUT = 120  # characters
 # One step up or down by the unit a value is written in; others go by about a twentieth of the value.
 STEPS = {"degC": "1", "°C": "1", "degF": "2", "°F": "2", "K": "1", "R": "2", "": "0.01", "%": "1", "years": "1"}
+NO_VALUE = "there is no value to step from; write one with its unit"
 _WRITTEN = re.compile(r"^\s*([+\u2212-]?(?:[0-9]+\.?[0-9]*|\.[0-9]+))\s*(.*?)\s*$", re.DOTALL)
 
 
@@ -232,20 +233,44 @@ def nudged(text: str, sign: int) -> str:
     """Return a value one step up or down, in the unit and with the digits it is written with.
 
     Args:
-        text: Number and unit as written. [-]
+        text: Number and unit as written; of [low, base, high] all three go the step of the base. [-]
         sign: +1 or -1. [-]
     Raises: RefusedError if there is no number to begin with.
     """
+    if text.startswith("[") and text.endswith("]"):
+        return _all_nudged(text, sign)
     found = _WRITTEN.match(text)
     if found is None:
-        raise RefusedError("there is no value to step from; write one with its unit")
-    unit = found[2]
+        raise RefusedError(NO_VALUE)
+    value, unit = _decimal(found), found[2]
+    return f"{value + sign * _step(value, unit):f} {unit}".strip()
+
+
+def _all_nudged(text: str, sign: int) -> str:
+    """Return low, base and high, each by the step of the base, so that their distances stay."""
+    parts = [part.strip() for part in text[1:-1].split(",")]
+    found = [_WRITTEN.match(part.strip('"')) for part in parts]
+    if len(parts) != 3 or found[1] is None:
+        raise RefusedError(NO_VALUE)
+    step = _step(_decimal(found[1]), found[1][2])
+    stepped = []
+    for part, number in zip(parts, found, strict=True):
+        if number is None:
+            raise RefusedError(NO_VALUE)
+        plain = f"{_decimal(number) + sign * step:f} {number[2]}".strip()
+        stepped.append(f'"{plain}"' if part.startswith('"') else plain)
+    return f"[{', '.join(stepped)}]"
+
+
+def _decimal(number: re.Match[str]) -> Decimal:
     try:
-        value = Decimal(found[1].replace(MINUS, "-"))
+        return Decimal(number[1].replace(MINUS, "-"))
     except InvalidOperation:
-        raise RefusedError("there is no value to step from; write one with its unit") from None
-    stepped = value + sign * (Decimal(STEPS[unit]) if unit in STEPS else _twentieth(value))
-    return f"{stepped:f} {unit}".strip()
+        raise RefusedError(NO_VALUE) from None
+
+
+def _step(value: Decimal, unit: str) -> Decimal:
+    return Decimal(STEPS[unit]) if unit in STEPS else _twentieth(value)
 
 
 def _twentieth(value: Decimal) -> Decimal:

@@ -23,7 +23,8 @@ def test_only_what_means_something_for_the_plant_is_offered():
     assert "compressor.isentropic_efficiency" not in offered(whole)
 
 
-# By hand: a kelvin or a degree Celsius, two degrees Fahrenheit, a hundredth of a bare share, else about a twentieth.
+# By hand: a kelvin or a degree Celsius, two degrees Fahrenheit, a hundredth of a bare share, else about a twentieth;
+# low, base and high go together, by the step of the base.
 @pytest.mark.parametrize(
     ("text", "up", "down"),
     [
@@ -37,6 +38,8 @@ def test_only_what_means_something_for_the_plant_is_offered():
         ("260 kg", "270 kg", "250 kg"),
         ("201 m3/h", "211 m3/h", "191 m3/h"),
         ("0.3 kg/kWh", "0.31 kg/kWh", "0.29 kg/kWh"),
+        ("[0.15, 0.18, 0.25]", "[0.16, 0.19, 0.26]", "[0.14, 0.17, 0.24]"),
+        ('["9 kW", "10 kW", "12 kW"]', '["9.5 kW", "10.5 kW", "12.5 kW"]', '["8.5 kW", "9.5 kW", "11.5 kW"]'),
     ],
 )
 def test_a_step_keeps_the_unit(text, up, down):
@@ -45,7 +48,7 @@ def test_a_step_keeps_the_unit(text, up, down):
     assert nudged(text, -1) == down
 
 
-@pytest.mark.parametrize("text", ["", "warm", "[0.2, 0.3, 0.4]"])
+@pytest.mark.parametrize("text", ["", "warm", "[0.2, 0.3]", "[low, base, high]", "[[1, 2, 3]]", "[]"])
 def test_there_is_no_step_without_a_number(text):
     """What is no single number is refused in words."""
     with pytest.raises(RefusedError, match="no value to step from"):
