@@ -89,6 +89,7 @@ class Desk:
         self._results: OrderedDict[Physics, Comparison | str] = OrderedDict()
         self._partial: set[Physics] = set()
         self._wanted: Physics | None = None
+        self._shown = State().physics
         self._doing = ""
         self._since = 0.0
         self._last: Comparison = assess(compare(source.case, on_build), source.on)
@@ -110,6 +111,9 @@ class Desk:
         """
         key, until = state.physics, time.monotonic() + patience_s
         with self._door:
+            self._shown = key
+            if key in self._partial:
+                self._door.notify_all()
             if key not in self._results:
                 self._wanted = key
                 self._door.notify_all()
@@ -132,7 +136,7 @@ class Desk:
     def _work(self) -> None:
         while True:
             with self._door:
-                while self._wanted is None and not self._partial:
+                while self._wanted is None and self._shown not in self._partial:
                     self._door.wait()
                 if self._wanted is None:
                     self._door.wait(PAUSE_S)  # what follows lets the next change go first
@@ -143,20 +147,31 @@ class Desk:
             found = self._made(key)
             with self._door:
                 self._keep(key, found)
-                self._partial = {key} if isinstance(found, Comparison) and has_life(found.case) else set()
+                if isinstance(found, Comparison) and has_life(found.case):
+                    self._partial.add(key)
                 if self._wanted == key:
                     self._wanted = None
                 self._door.notify_all()
 
     def _follow(self) -> None:
-        """Add the remaining life to the last result, like hours of its year taken together."""
+        """Add the remaining life to the result that is shown; one that is overtaken has it when it is shown again."""
         with self._door:
-            key = next(iter(self._partial), None)
-            found = self._results.get(key) if key is not None else None
-        whole = _with_life(found) if isinstance(found, Comparison) else None
+            key = self._shown
+            found = self._results.get(key) if key in self._partial else None
+        if not isinstance(found, Comparison):
+            return
+
+        def give_way() -> None:
+            if self._wanted is not None or self._shown != key:
+                raise _Overtaken
+
+        try:
+            whole = _with_life(found, give_way)
+        except _Overtaken:
+            return
         with self._door:
             self._partial.discard(key)
-            if key is not None and whole is not None and key in self._results:
+            if whole is not None and key in self._results:
                 self._results[key] = whole
 
     def _made(self, key: Physics) -> Comparison | str:
@@ -174,7 +189,7 @@ class Desk:
     def _keep(self, key: Physics, found: Comparison | str) -> None:
         self._results[key] = found
         while len(self._results) > MOST_RESULTS:
-            self._results.popitem(last=False)
+            self._partial.discard(self._results.popitem(last=False)[0])
 
 
 def has_life(case: Case) -> bool:
@@ -186,12 +201,22 @@ def has_life(case: Case) -> bool:
     return any(table is not None for table in (case.year, case.emissions, case.money))
 
 
-def _with_life(found: Comparison) -> Comparison | None:
-    """Return a result with the remaining life of its options; nothing if that cannot be worked out."""
+class _Overtaken(BaseException):
+    """Something newer is asked for."""
+
+
+def _with_life(found: Comparison, give_way: Callable[[], None]) -> Comparison | None:
+    """Return a result with the remaining life of its options, like hours of the year taken together.
+
+    Args:
+        found: The result.
+        give_way: Called between the options, to end the work where something newer is asked for.
+    Returns: Nothing if it cannot be worked out.
+    """
     from retrofit.study.life import life_of
 
     try:
-        return replace(found, life=life_of(found, draws=0, hourly=False))
+        return replace(found, life=life_of(found, draws=0, hourly=False, before_each=give_way))
     except RetrofitError:
         return None
     except Exception:

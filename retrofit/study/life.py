@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Mapping
+from collections.abc import Callable, Iterator, Mapping
 from dataclasses import dataclass, fields, replace
 
 import numpy as np
@@ -152,7 +152,14 @@ class _Way:
     reason: str = ""
 
 
-def life_of(comparison: Comparison, draws: int = DRAWS, seed: int = SEED, *, hourly: bool = True) -> Life:
+def life_of(
+    comparison: Comparison,
+    draws: int = DRAWS,
+    seed: int = SEED,
+    *,
+    hourly: bool = True,
+    before_each: Callable[[], None] = lambda: None,
+) -> Life:
     """Return the remaining life of every option of a result.
 
     Args:
@@ -160,6 +167,7 @@ def life_of(comparison: Comparison, draws: int = DRAWS, seed: int = SEED, *, hou
         draws: Number of draws of the inputs; 0 for none. [-]
         seed: The same seed gives the same numbers. [-]
         hourly: Whether each hour is solved for itself; else like hours together, which takes a twentieth of the time.
+        before_each: Called before the year of each option; what it raises ends the work.
     Returns: The remaining life; what cannot be computed has its reason.
     """
     case = comparison.case
@@ -171,6 +179,7 @@ def life_of(comparison: Comparison, draws: int = DRAWS, seed: int = SEED, *, hou
     years: dict[str, YearRun] = {}
     no_year: dict[str, str] = {}
     for way in ways:
+        before_each()
         name, found = way.entry.refrigerant.designation, NO_YEAR if asked is None else _year(case, way, asked)
         if isinstance(found, str):
             no_year[name] = found

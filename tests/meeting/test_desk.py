@@ -1,6 +1,7 @@
 """The desk: one result at a time, the newest first, each once, and no fault ends it."""
 
 import threading
+import time
 
 import pytest
 
@@ -112,8 +113,6 @@ def test_a_case_that_cannot_be_read_begins_no_meeting(tmp_path):
 
 def test_the_remaining_life_follows_the_first_answer(desk):
     """The answer does not wait for the year; the year comes into the same result, and the numbers stay."""
-    import time
-
     first = desk.outcome(warmer(45), 30.0)
     until = time.monotonic() + 30.0
     while not (last := desk.outcome(warmer(45))).is_whole and time.monotonic() < until:
@@ -125,10 +124,30 @@ def test_the_remaining_life_follows_the_first_answer(desk):
     assert [entry.duty for entry in last.comparison.entries] == [entry.duty for entry in first.comparison.entries]
 
 
+def test_years_give_way_to_a_newer_change_and_come_when_seen_again(desk, monkeypatch):
+    """A change that lands while years are worked out goes first; who goes back to the overtaken state has its years."""
+    from retrofit.study import life
+
+    gate, begun, whole = threading.Event(), threading.Event(), life._year
+    monkeypatch.setattr(life, "_year", lambda *parts: begun.set() or (gate.wait(30.0) and whole(*parts)))
+    desk.outcome(warmer(45), 30.0)
+    assert begun.wait(30.0)
+    desk.outcome(warmer(46), 0.05)
+    gate.set()
+    newer = desk.outcome(warmer(46), 30.0)
+    again = desk.outcome(warmer(45))
+
+    assert newer.is_current
+    assert again.comparison.life is None
+    assert not again.is_whole
+    until = time.monotonic() + 30.0
+    while not (again := desk.outcome(warmer(45))).is_whole and time.monotonic() < until:
+        time.sleep(0.02)
+    assert "R448A" in again.comparison.life.years
+
+
 def test_a_tariff_changes_money_and_no_temperature(tmp_path):
     """Tariff, grid factor, leak rate and life are inputs where the case has their tables; money and warming follow."""
-    import time
-
     path = tmp_path / "market.toml"
     path.write_text(case_text(), encoding="utf-8")
     client = Client(session_of(path))
