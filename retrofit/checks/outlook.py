@@ -60,6 +60,7 @@ class Outlook:
         swing: What moves the answer most; empty without draws.
         ranking: Which option comes first under even weights, sentence by sentence.
         stopped: Which options a check stops, whatever their numbers here; empty if none.
+        absent: Which tables the case would need for what is not computed at all; empty if it has them.
     """
 
     year: tuple[Matter, ...]
@@ -70,6 +71,7 @@ class Outlook:
     swing: str
     ranking: tuple[str, ...]
     stopped: str
+    absent: str
 
     @property
     def matters(self) -> tuple[Matter, ...]:
@@ -94,11 +96,24 @@ def outlook(comparison: Comparison, units: UnitSystem) -> Outlook:
         swing=swing_words(comparison, units),
         ranking=ranking_words(ranked(comparison)),
         stopped=_stopped(comparison),
+        absent=_absent(comparison),
     )
 
 
 def _there(*matters: Matter) -> tuple[Matter, ...]:
     return tuple(matter for matter in matters if matter.groups)
+
+
+TABLES = {"year": "the electricity of a year", "emissions": "the warming", "money": "first cost and yearly cost"}
+
+
+def _absent(comparison: Comparison) -> str:
+    """Return which tables the case would need for what is not computed."""
+    missing = [name for name in TABLES if getattr(comparison.case, name) is None]
+    if not missing:
+        return ""
+    matters = listed([TABLES[name] for name in missing], "and")
+    return f"Not computed: {matters}. The case would need {listed([f'[{name}]' for name in missing], 'and')}."
 
 
 def _stopped(comparison: Comparison) -> str:

@@ -57,7 +57,7 @@ def year_text(comparison: Comparison, units: UnitSystem, columns: int, strong: E
     parts = [
         strong(shown(comparison.case.title, 200)),
         *(_matters(matters, columns) for matters in (words.year, words.emissions, words.money)),
-        "\n".join(paragraph(text, columns) for text in (words.stopped, words.meter, words.swing) if text),
+        "\n".join(paragraph(text, columns) for text in (words.absent, words.stopped, words.meter, words.swing) if text),
         *cautions_text(comparison, columns, strong),
         _year(comparison, options, units, columns, strong),
         _emissions(comparison, options, units, columns, strong),

@@ -86,3 +86,14 @@ def test_hours_without_their_load_are_named(lived):
     text = " ".join(year_text(replace(comparison, life=life), SI, 100).split())
 
     assert "some of it unmet, so that part of a lower electricity is load not met: R454B 41 h, 33.3 kWh" in text
+
+
+def test_what_the_case_has_no_table_for_is_said(lived):
+    """A case without a year, emissions or money is told what it would need, before anything else."""
+    text = " ".join(year_text(lived("bottle-cooler"), SI, 100).split())
+
+    assert (
+        "Not computed: the electricity of a year, the warming and first cost and yearly cost. "
+        "The case would need [year], [emissions] and [money]."
+    ) in text
+    assert "Not computed" not in " ".join(year_text(lived("harbour-market"), SI, 100).split())
