@@ -72,7 +72,7 @@ def _effect(entry: Entry) -> float:
 def _overlay(comparison: Comparison, group: list[Placed], units: UnitSystem, number: int) -> Drawing:
     box = _limits([entry for _, entry in group], units)
     names = ", ".join(entry.refrigerant.display_name for _, entry in group)
-    with canvas(4.6, 0.56, 1.12, 0.08, 0.44) as figure:
+    with canvas(3.7, 0.56, 1.12, 0.08, 0.44) as figure:
         axes = _axes(figure, units, box)
         for place, entry in group:
             mark = mark_at(comparison, place)
@@ -98,20 +98,21 @@ def _overlay(comparison: Comparison, group: list[Placed], units: UnitSystem, num
     return Drawing(name, svg, caption + ".", described)
 
 
-def cycle_chart(comparison: Comparison, place: int, units: UnitSystem) -> Drawing | None:
+def cycle_chart(comparison: Comparison, place: int, units: UnitSystem, height_in: float = 3.4) -> Drawing | None:
     """Draw the cycle of one refrigerant with the numbers of its state table.
 
     Args:
         comparison: The result.
         place: 0 for the existing refrigerant, then the candidates in order. [-]
         units: The reader's units.
+        height_in: Height of the chart. [in]
     Returns: The chart, None if the refrigerant was not computed.
     """
     entry = comparison.entries[place]
     if entry.lines is None:
         return None
     mark, label, box = mark_at(comparison, place), entry.refrigerant.display_name, _limits([entry], units)
-    with canvas(3.4, 0.56, 0.08, 0.08, 0.44) as figure:
+    with canvas(height_in, 0.56, 0.08, 0.08, 0.44) as figure:
         axes = _axes(figure, units, box)
         _dome(axes, entry.lines, units, mark.colour, THIN)
         h, p = _closed(entry, units)
@@ -214,18 +215,11 @@ def _end_labels(axes: Any, comparison: Comparison, group: list[Placed], units: U
     heights = spread(wanted, 0.055)
     for (p_end, h_end, place, label), height in zip(ends, heights, strict=True):
         mark = mark_at(comparison, place)
-        axes.annotate(
-            label,
-            (h_end, p_end),
-            (1.03, height),
-            textcoords="axes fraction",
-            va="center",
-            ha="left",
-            fontsize=LABEL_PT,
-            weight="bold" if place == 0 else "normal",
-            annotation_clip=False,
-            arrowprops={"arrowstyle": "-", "linewidth": HAIRLINE, "color": mark.colour, "shrinkA": 1, "shrinkB": 3},
-        )
+        leader = {"arrowstyle": "-", "linewidth": HAIRLINE, "color": mark.colour, "shrinkA": 0, "shrinkB": 3}
+        axes.annotate("", (h_end, p_end), (1.004, height), textcoords="axes fraction", arrowprops=leader,
+                      annotation_clip=False)  # fmt: skip
+        axes.annotate(label, (1.03, height), xycoords="axes fraction", va="center", ha="left", fontsize=LABEL_PT,
+                      weight="bold" if place == 0 else "normal", annotation_clip=False)  # fmt: skip
         axes.plot(
             [1.015], [height], mark.marker, color=mark.colour, markersize=5, transform=axes.transAxes, clip_on=False
         )

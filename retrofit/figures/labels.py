@@ -10,6 +10,9 @@ from retrofit.figures.style import HAIRLINE, INK, LABEL_PT, SMALL_PT, THIN, Mark
 from retrofit.study import Comparison
 from retrofit.units import format_number
 
+POINTS_PER_IN = 72.0
+APART_PT = 1.25 * LABEL_PT  # from one name to the next
+
 
 def spread(wanted: Sequence[float], least: float) -> list[float]:
     """Return heights, falling, at least some way apart and centred on the wanted ones.
@@ -45,15 +48,16 @@ def mark_in(comparison: Comparison, option: Prospect) -> Mark:
     return Mark(found.colour, "X", (0, (2, 1.5)), THIN) if option.deed == KEPT else found
 
 
-def end_labels(axes: Any, ends: Sequence[tuple[float, Mark, str]], least: float = 0.085) -> None:
+def end_labels(axes: Any, ends: Sequence[tuple[float, Mark, str]]) -> None:
     """Name lines in the right margin, each with its marker and a hairline to its end.
 
     Args:
         axes: Axes whose limits are set.
         ends: Height of each line at the right edge, its mark and its name. [units of the axis]
-        least: Smallest distance of two names, as a share of the axis. [-]
     """
     low, high = axes.get_ylim()
+    height_pt = axes.bbox.height * POINTS_PER_IN / axes.figure.dpi
+    least = min(APART_PT / height_pt, 0.97 / max(1, len(ends) - 1))
     ordered = sorted(ends, key=lambda end: -end[0])
     heights = spread([(value - low) / (high - low) for value, _, _ in ordered], least)
     for (value, mark, text), height in zip(ordered, heights, strict=True):

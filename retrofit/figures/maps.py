@@ -32,7 +32,7 @@ def map_chart(option: Prospect, asked: YearConditions, units: UnitSystem) -> Dra
     heating = asked.serves == "heating"
     delivered = found.cop * found.power_W if heating else found.cooling_W
     what, label = "Heat" if heating else "Cooling", units.label("cooling")
-    with canvas(2.55, 0.65, 0.15, 0.26, 0.46) as figure:
+    with canvas(2.1, 0.65, 0.15, 0.26, 0.46) as figure:
         left, right = figure.subplots(1, 2, sharey=True, gridspec_kw={"wspace": 0.08})
         _panel(left, found, np.asarray(units.number("cooling", delivered)), f"{what} at full [{label}]", units, "%.0f")
         _panel(right, found, found.cop, "COP at full", units, "%.1f")

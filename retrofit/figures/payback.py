@@ -27,7 +27,7 @@ def payback_chart(comparison: Comparison) -> Drawing | None:
     options, beyond = _on_scale([option for option in prospects(comparison)[1:] if _extra(option) is not None])
     if not options:
         return None
-    with canvas(3.1, 0.85, 1.4, 0.26, 0.46) as figure:
+    with canvas(2.8, 0.85, 1.4, 0.26, 0.46) as figure:
         axes = figure.subplots()
         axes.axhline(0.0, color=INK, linewidth=THIN)
         lines = [_line(comparison, axes, option) for option in options]
@@ -39,7 +39,7 @@ def payback_chart(comparison: Comparison) -> Drawing | None:
         upright(axes, life, f"end of the remaining life, {life:g} years", "right")
         named = [(o, f"{label_of(o)}{_after(o)}") for o in options]
         ends = [(float(y[-1]), mark_in(comparison, o), text) for (o, text), (_, y) in zip(named, lines, strict=True)]
-        end_labels(axes, ends, 0.07)
+        end_labels(axes, ends)
         axes.annotate(
             "dearer so far", (0.0, 0.0), (4, 3), textcoords="offset points", fontsize=SMALL_PT, style="italic"
         )

@@ -13,7 +13,7 @@ from retrofit.study import Comparison, Entry
 from retrofit.study.bands import band_of, model_band, pair_band
 from retrofit.units import ZERO_C_K, UnitSystem, format_number, listed
 
-ROW_IN, FRAME_IN = 0.235, 0.76
+ROW_IN, FRAME_IN = 0.2, 0.74
 MARGINS_IN = (0.9, 0.5, 0.26, 0.46)  # left, right, top, bottom
 ZONE = 0.42  # half the height of a row's own band [rows]
 PAIR = (30, 64)  # where two columns in the right margin end [pt]

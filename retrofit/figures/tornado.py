@@ -13,7 +13,7 @@ from retrofit.study import Comparison
 from retrofit.study.life import Swing
 from retrofit.units import UnitSystem
 
-ROW_IN, FRAME_IN = 0.34, 0.78
+ROW_IN, FRAME_IN = 0.3, 0.76
 MOST = 8
 HEIGHT, PALE = 0.5, 0.3
 LONGEST = 48  # characters of a label
@@ -73,7 +73,8 @@ def _number(units: UnitSystem, result: str, value: float) -> float:
 
 
 def _bar(axes: Any, place: int, swing: Swing, base: float, units: UnitSystem, result: str) -> None:
-    axes.axhline(place, color=INK, linewidth=HAIRLINE, alpha=0.18)
+    if place:
+        axes.axhline(place - 0.5, color=INK, linewidth=HAIRLINE, alpha=0.18)  # between rows: it strikes no number
     for value, style in (
         (swing.at_low, {"color": "none", "edgecolor": INK, "hatch": "////", "linewidth": THIN}),
         (swing.at_high, {"color": INK, "alpha": PALE, "linewidth": 0}),

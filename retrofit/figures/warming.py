@@ -11,7 +11,7 @@ from retrofit.figures.style import HAIRLINE, INK, LABEL_PT, SMALL_PT, THIN
 from retrofit.study import Comparison
 from retrofit.units import format_number
 
-ROW_IN, FRAME_IN = 0.3, 0.72
+ROW_IN, FRAME_IN = 0.23, 0.72
 KG_PER_T = 1000.0
 PALE, HEIGHT = 0.3, 0.56
 

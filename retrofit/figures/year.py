@@ -53,7 +53,7 @@ def energy_chart(comparison: Comparison, units: UnitSystem) -> Drawing | None:
     band = model_band()["cop"].value
     label, name = units.label("energy"), label_of(options[0])
     left, right = MARGINS_IN
-    with canvas(3.7, left, right, 0.26, 0.46) as figure:
+    with canvas(3.2, left, right, 0.26, 0.46 if steps.label else 0.26) as figure:
         upper, lower = figure.subplots(2, 1, sharex=True, gridspec_kw={"hspace": 0.2, "height_ratios": (2, 3)})
         upper.bar(steps.middle, base, 0.8 * steps.width, color=INK, alpha=PALE, linewidth=0)
         upper.set_ylabel(f"{name} [{label}]")
@@ -210,7 +210,7 @@ def ambient_chart(comparison: Comparison, units: UnitSystem) -> Drawing | None:
         return None
     axis = axis_of(comparison, asked)
     left, right = MARGINS_IN
-    with canvas(4.3, left, right, 0.26, 0.46) as figure:
+    with canvas(3.8, left, right, 0.26, 0.46) as figure:
         upper, lower = figure.subplots(2, 1, sharex=True, gridspec_kw={"hspace": 0.12, "height_ratios": (6, 5)})
         x = _outdoors(maps[0][1], axis, units)
         capacity = [(option, _capacity(found, asked.serves, axis, units)) for option, found in maps]

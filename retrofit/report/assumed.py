@@ -7,7 +7,7 @@ from dataclasses import replace
 
 from retrofit.case import Case
 from retrofit.report.inputs import defaults
-from retrofit.report.table import Group, Row
+from retrofit.report.table import Group, Row, Table
 from retrofit.study import Comparison
 from retrofit.units import UnitSystem, listed
 
@@ -18,7 +18,10 @@ _EFFECTS = (*_CYCLE, *_SUPERHEATS, "duty.subcooling")
 _MACHINE = ("compressor.isentropic_efficiency", "compressor.volumetric_efficiency", "compressor.heat_loss")
 _EXCHANGERS = tuple(f"{way}.{key}" for way in ("evaporator", "condenser") for key in ("film_factor", "pressure_drop"))
 _PLANT = (*_EFFECTS, *_MACHINE, *_EXCHANGERS, "evaporator.specific_heat", "condenser.specific_heat")
-# Defaults that the rows of a group of the comparison rest on, by the name of the group.
+_ALL = (*_PLANT, "year", "emissions", "money", "options")
+_GWP = ("emissions.gwp_edition",)
+# Defaults that the rows of a group of the comparison rest on, by the name of the group; a table of the case stands for
+# all of its keys.
 GROUPS = {
     "pressures": _CYCLE,
     "temperatures": _CYCLE,
@@ -29,6 +32,13 @@ GROUPS = {
     "plant-full": _PLANT,
     "plant-run": _PLANT,
     "settings": _CYCLE,
+    "year": (*_PLANT, "year"),
+    "parts": (*_PLANT, "year"),
+    "charge": (),
+    "tewi": (),
+    "yearly": ("money",),
+    "life": ("money", "options"),
+    "shares": _PLANT,
 }
 # And some rows on more, by a part of their label.
 ROWS = {
@@ -37,7 +47,27 @@ ROWS = {
     "Evaporator inlet": ("duty.subcooling",),
     "Evaporator mean": ("duty.subcooling",),
     "Glide in the evaporator": ("duty.subcooling",),
+    "GWP over": _GWP,
+    "CO2e of the charge": _GWP,
+    "leaking in the years": _GWP,
+    "lost at the end": (*_GWP, "emissions.recovery_at_end"),
+    "lost at the change": (*_GWP, "emissions.lost_at_change", "emissions.old_charge"),
+    "Direct, all": ("emissions",),
+    "Indirect, all": (*_PLANT, "year", "emissions"),
+    "Sum": _ALL,
+    "Energy": (*_PLANT, "year"),
+    "Demand charge": (*_PLANT, "year"),
+    "Saving against": _ALL,
+    "Simple payback": _ALL,
+    "Cost against": _ALL,
+    "The same: ": _ALL,
+    "Net present value": _ALL,
+    "Cost of CO2e": _ALL,
+    "less electricity": (*_PLANT, "year"),
+    "costs less": _ALL,
+    "warms less": _ALL,
 }
+WORDS = ("What is done",)  # rows that rest on nothing
 # Tables of the case whose defaults a section rests on.
 SECTIONS = {
     "found": ("plant", "readings", "evaporator", "condenser"),
@@ -58,6 +88,19 @@ def marked(comparison: Comparison, groups: Sequence[Group]) -> tuple[Group, ...]
         replace(group, rows=tuple(_marked(row, _rests(comparison, group, row)) for row in group.rows))
         for group in groups
     )
+
+
+def with_signs(comparison: Comparison, table: Table | None, units: UnitSystem) -> Table | None:
+    """Return a table with the sign on every row that rests on an assumed value, and what it stands for.
+
+    Args:
+        comparison: The result.
+        table: The table, or None.
+        units: The reader's units.
+    """
+    if table is None:
+        return None
+    return replace(table, groups=marked(comparison, table.groups), assumed=legend(comparison, table.groups, units))
 
 
 def legend(comparison: Comparison, groups: Iterable[Group], units: UnitSystem) -> str:
@@ -95,7 +138,9 @@ def _rests(comparison: Comparison, group: Group, row: Row) -> list[str]:
     on = {*GROUPS.get(group.name, ()), *(key for part, keys in ROWS.items() if part in row.label for key in keys)}
     if group.name == "settings":  # as gauges show them
         on.add("plant.altitude")
-    return [default.key for default in comparison.case.defaults if default.key in on and group.name in GROUPS]
+    if group.name not in GROUPS or row.label in WORDS:
+        return []
+    return [item.key for item in comparison.case.defaults if item.key in on or item.key.partition(".")[0] in on]
 
 
 def _legend(case: Case, keys: set[str], units: UnitSystem) -> str:

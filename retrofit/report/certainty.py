@@ -11,7 +11,7 @@ from retrofit.figures.tornado import limits_text
 from retrofit.report.judging import spelled
 from retrofit.report.plain import plain
 from retrofit.report.prospect_rows import Options, missing_of, shown_name
-from retrofit.report.table import Cell, Group, Row, Table
+from retrofit.report.table import MOST_COLUMNS, Cell, Group, Row, Table
 from retrofit.study import Comparison
 from retrofit.study.life import Life
 from retrofit.study.ranking import MEANING, SCALE
@@ -26,6 +26,7 @@ PROBABILITIES = (
     ("warms less over the remaining life", "cleaner"),
 )
 RESTS_ON = {"uses_less": "energy", "cheaper": "cost", "cleaner": "emissions"}
+DESIGN, YEARS, MONEY, LIFE = "Design point", "Electricity and warming", "Money", "Money over the remaining life"
 GUIDE = (
     "as the Guide to the expression of uncertainty in measurement (JCGM 100:2008, 4.3.7) takes where only the limits "
     "are known"
@@ -48,9 +49,18 @@ def certainty_table(comparison: Comparison, options: Options) -> Table | None:
     groups = (Group("shares", f"Share of the {life.draws} draws in which it", rows),)
     basis = (
         "Basis: all inputs that may be off drawn together, every option with the same draws; against the plant as it "
-        "is. The cooling needed is that of the design point, on the existing plant."
+        "is. The cooling needed is that of the design point, on the existing plant. "
+        f"{_assumed_limits(life)}"
     )
     return Table("certainty", "How sure it is", basis, options.names, groups, options.notes.listed())
+
+
+def _assumed_limits(life: Life) -> str:
+    """Return in a sentence how many inputs have limits that the case does not give."""
+    count = sum(item.origin == "assumed" for item in life.inputs)
+    if not count:
+        return "The case or the model gives the limits of every input."
+    return f"Of {len(life.inputs)} inputs {count} have assumed limits, for the case gives none."
 
 
 def _share(options: Options, option: Prospect, name: str) -> Cell:
@@ -76,49 +86,80 @@ def spans(comparison: Comparison, options: Options, units: UnitSystem) -> Table 
         options: The options.
         units: The reader's units.
     """
-    groups = []
-    for name, label, unit, to_number in _results(comparison, units):
-        if not any(quantile(option, name) for option in options.all):
-            continue
-        rows = tuple(
-            options.quantiles(f"{percent} % of draws below", unit, name, place, to_number)
-            for place, percent in enumerate((10, 50, 90))
-        )
-        groups.append(Group(name.replace("_", "-").lower(), label, rows))
-    if not groups:
+    known = [result for result in _results(comparison, units) if any(quantile(o, result.name) for o in options.all)]
+    if not known:
         return None
+    groups = _side_by_side(options, known) if len(options.names) > MOST_COLUMNS else _one_by_one(options, known)
     caption = "What 10, 50 and 90 per cent of the draws stay below"
     basis = "Basis: the same draws for every option; design point, existing plant, where no year is named."
-    return Table("spans", caption, basis, options.names, tuple(groups), options.notes.listed())
+    return Table("spans", caption, basis, options.names, groups, options.notes.listed())
 
 
 Number = Callable[[float], float]
 
 
-def _results(comparison: Comparison, units: UnitSystem) -> tuple[tuple[str, str, str, Number], ...]:
-    """Return name, heading, unit and conversion of each result."""
+@dataclass(frozen=True)
+class Result:
+    """A result that a reader may want the range of: name, heading, unit, conversion, and the table it stands in."""
+
+    name: str
+    label: str
+    unit: str
+    to_number: Number
+    group: str
+
+
+def _one_by_one(options: Options, results: list[Result]) -> tuple[Group, ...]:
+    """Return a group for each result, a row for each quantile."""
+    return tuple(
+        Group(
+            result.name.replace("_", "-").lower(),
+            result.label,
+            tuple(
+                options.quantiles(f"{percent} % of draws below", result.unit, result.name, place, result.to_number)
+                for place, percent in enumerate((10, 50, 90))
+            ),
+        )
+        for result in results
+    )
+
+
+def _side_by_side(options: Options, results: list[Result]) -> tuple[Group, ...]:
+    """Return a few groups with one row for each result, its three quantiles in a cell."""
+    found: dict[str, list[Row]] = {}
+    for result in results:
+        row = options.three_quantiles(result.label, result.unit, result.name, result.to_number)
+        found.setdefault(result.group, []).append(row)
+    return tuple(
+        Group(name.replace(" ", "-").lower(), f"{name}: 10, 50 and 90 % of the draws stay below", tuple(rows))
+        for name, rows in found.items()
+    )
+
+
+def _results(comparison: Comparison, units: UnitSystem) -> tuple[Result, ...]:
+    """Return the results whose ranges are told."""
     money = currency(comparison)
 
-    def as_shown(kind: str) -> tuple[str, Number]:
-        return units.label(kind), lambda value: float(units.number(kind, value))
+    def shown(name: str, label: str, kind: str, group: str) -> Result:
+        return Result(name, label, units.label(kind), lambda value: float(units.number(kind, value)), group)
 
-    def as_is(value: float) -> float:
-        return value
+    def as_is(name: str, label: str, unit: str, group: str, per: float = 1.0) -> Result:
+        return Result(name, label, unit, lambda value: value / per, group)
 
     return (
-        ("cooling_W", "Cooling at full", *as_shown("cooling")),
-        ("cop", "COP at today's cooling", "", as_is),
-        ("T_discharge_K", "Discharge temperature at full", *as_shown("temperature")),
-        ("energy_J", "Electricity of a year", *as_shown("energy")),
-        ("energy_saving_J", "Electricity saved in a year", *as_shown("energy")),
-        ("tewi_kg", "Warming over the remaining life", "t CO2e", lambda value: value / KG_PER_T),
-        ("avoided_t", "CO2e avoided over the remaining life", "t CO2e", as_is),
-        ("first_cost", "First cost", money, as_is),
-        ("yearly_saving", "Yearly saving", money, as_is),
-        ("payback_years", "Simple payback", "years", as_is),
-        ("npv", "Net present value", money, as_is),
-        ("life_saving", "Saved over the remaining life, first cost paid", money, as_is),
-        ("cost_per_t", "Cost of a tonne of CO2e avoided", f"{money}/t", as_is),
+        shown("cooling_W", "Cooling at full", "cooling", DESIGN),
+        as_is("cop", "COP at today's cooling", "", DESIGN),
+        shown("T_discharge_K", "Discharge temperature at full", "temperature", DESIGN),
+        shown("energy_J", "Electricity of a year", "energy", YEARS),
+        shown("energy_saving_J", "Electricity saved in a year", "energy", YEARS),
+        as_is("tewi_kg", "Warming over the remaining life", "t CO2e", YEARS, KG_PER_T),
+        as_is("avoided_t", "CO2e avoided over the remaining life", "t CO2e", YEARS),
+        as_is("first_cost", "First cost", money, MONEY),
+        as_is("yearly_saving", "Yearly saving", money, MONEY),
+        as_is("payback_years", "Simple payback", "years", MONEY),
+        as_is("npv", "Net present value", money, LIFE),
+        as_is("life_saving", "Saved over the remaining life, first cost paid", money, LIFE),
+        as_is("cost_per_t", "Cost of a tonne of CO2e avoided", f"{money}/t", LIFE),
     )
 
 

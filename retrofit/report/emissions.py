@@ -6,7 +6,7 @@ from typing import Any
 
 from retrofit.checks.outlook import KG_PER_T, rounded_text
 from retrofit.checks.prospects import Prospect, prospects
-from retrofit.report.prospect_rows import Options, assumed_text, missing_of, shown_name
+from retrofit.report.prospect_rows import Options, missing_of, shown_name
 from retrofit.report.table import Cell, Group, Row, Table
 from retrofit.study import Comparison
 from retrofit.study.emissions import edition_of
@@ -30,7 +30,7 @@ def emissions_table(comparison: Comparison, options: Options, units: UnitSystem)
     )
     basis = (
         f"Basis: TEWI over the remaining life, {life}, GWP over 100 years by {edition}; today's leak rate and, after a "
-        f"change, the one the case gives.{assumed_text(comparison, ('emissions',))}"
+        f"change, the one the case gives."
     )
     caption = "Warming over the remaining life"
     return Table("emissions", caption, basis, options.names, groups, options.notes.listed())
@@ -120,7 +120,7 @@ def _warming(options: Options) -> tuple[Row, ...]:
     return (
         *rows,
         options.changes("Sum against the plant as it is", "emissions"),
-        *options.ranges("Sum", "t CO2e", "tewi_kg", lambda value: value / KG_PER_T),
+        options.ranges("Sum: 8 of 10 draws within", "t CO2e", "tewi_kg", lambda value: value / KG_PER_T),
     )
 
 

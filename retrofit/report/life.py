@@ -9,6 +9,7 @@ from retrofit.checks.answer import Matter
 from retrofit.checks.outlook import outlook, told_result
 from retrofit.checks.prospects import KEPT, leading, life_of_result, prospects
 from retrofit.figures import Drawing
+from retrofit.report.assumed import with_signs
 from retrofit.report.certainty import (
     Drawn,
     Moved,
@@ -105,6 +106,9 @@ def life_part(comparison: Comparison, units: UnitSystem) -> LifePart | None:
     def options() -> Options:
         return Options(all_, Notes())
 
+    def signed(table: Table | None) -> Table | None:
+        return with_signs(comparison, table, units)
+
     first = leading(comparison)
     result = told_result(first) if first else None
     money = comparison.case.money
@@ -117,11 +121,11 @@ def life_part(comparison: Comparison, units: UnitSystem) -> LifePart | None:
         meter=words.meter,
         swing=spelled(plain(words.swing)),
         ranking=tuple(spelled(text) for text in words.ranking),
-        year=year_table(comparison, options(), units),
-        emissions=emissions_table(comparison, options(), units) if comparison.case.emissions else None,
-        money=money_table(comparison, options()),
-        certainty=certainty_table(comparison, options()),
-        year_parts=year_parts(comparison, options(), units),
+        year=signed(year_table(comparison, options(), units)),
+        emissions=signed(emissions_table(comparison, options(), units) if comparison.case.emissions else None),
+        money=signed(money_table(comparison, options())),
+        certainty=signed(certainty_table(comparison, options())),
+        year_parts=signed(year_parts(comparison, options(), units)),
         energy_chart=figures.energy_chart(comparison, axes),
         ambient_chart=figures.ambient_chart(comparison, axes),
         warming_chart=figures.warming_chart(comparison),

@@ -39,9 +39,8 @@ def money_table(comparison: Comparison, options: Options) -> Table | None:
         return None
     unit = currency(comparison)
     groups = (
-        Group("first", "Paid once", _first(options, unit)),
         Group("yearly", "A year", _yearly(options, unit)),
-        Group("life", "Over the remaining life", _life(comparison, options, unit)),
+        Group("life", "Paid once, and the remaining life", (*_first(options, unit), *_life(comparison, options, unit))),
     )
     basis = (
         f"Basis: {unit} as the case gives them, prices as today over the remaining life; savings against the plant as "
@@ -70,7 +69,7 @@ def _first(options: Options, unit: str) -> tuple[Row, ...]:
 
     return (
         options.row("First cost", unit, base, rounded_text, why, note),
-        Row("Every item low to every item high", unit, tuple(spread(option) for option in options.all)),
+        Row("Every item low to every high", unit, tuple(spread(option) for option in options.all)),
     )
 
 
@@ -131,8 +130,8 @@ def _life(comparison: Comparison, options: Options, unit: str) -> tuple[Row, ...
 
     rows = [
         Row("Simple payback", "years", tuple(_payback(options, option) for option in options.all)),
-        Row("Cost against the plant as it is, first cost included", unit, tuple(cost(o) for o in options.all)),
-        *options.ranges("The same", unit, "life_saving", lambda value: -value),
+        Row("Cost against the plant as it is, with first cost", unit, tuple(cost(o) for o in options.all)),
+        options.ranges("The same: 8 of 10 draws within", unit, "life_saving", lambda value: -value),
     ]
     if comparison.case.money is not None and comparison.case.money.discount_rate is not None:
         rate = format_number(100.0 * comparison.case.money.discount_rate, 1)

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Callable, Sequence
+from collections.abc import Callable
 from dataclasses import dataclass
 
 from retrofit.checks.outlook import UNKNOWN, percent, rounded_text
@@ -12,7 +12,6 @@ from retrofit.report.judging import spelled
 from retrofit.report.plain import plain
 from retrofit.report.rows import near
 from retrofit.report.table import Cell, Notes, Row
-from retrofit.study import Comparison
 from retrofit.units import MISSING
 
 Read = Callable[[Prospect], float | None]
@@ -94,20 +93,40 @@ class Options:
 
         return Row(label, "%", tuple(cell(option) for option in self.all))
 
-    def ranges(self, label: str, unit: str, name: str, to_number: Callable[[float], float]) -> tuple[Row, Row]:
-        """Return two rows with the ends of the range in which 8 of 10 draws lie.
+    def ranges(self, label: str, unit: str, name: str, to_number: Callable[[float], float]) -> Row:
+        """Return a row of the range in which 8 of 10 draws lie, from the value that 10 % stay below to that of 90 %.
 
         Args:
             label: What they are.
             unit: Their unit.
             name: Name of the result.
-            to_number: From its unit to that of the rows; it may turn the sign round.
+            to_number: From its unit to that of the row; it may turn the sign round.
         """
-        falls = to_number(1.0) < to_number(0.0)
-        return (
-            self.quantiles(f"{label}: 10 % of draws below", unit, name, 2 if falls else 0, to_number),
-            self.quantiles(f"{label}: 90 % of draws below", unit, name, 0 if falls else 2, to_number),
-        )
+
+        def cell(option: Prospect) -> Cell:
+            found = self._known(option, name)
+            if found is None:
+                return Cell(MISSING)
+            low, high = sorted((found[0], found[2]), key=to_number)
+            return Cell(f"{range_end(low, to_number)} to {range_end(high, to_number)}")
+
+        return Row(label, unit, tuple(cell(option) for option in self.all))
+
+    def three_quantiles(self, label: str, unit: str, name: str, to_number: Callable[[float], float]) -> Row:
+        """Return a row of the values that 10, 50 and 90 % of the draws stay below, together in a cell.
+
+        Args:
+            label: What they are.
+            unit: Their unit.
+            name: Name of the result.
+            to_number: From its unit to that of the row.
+        """
+
+        def cell(option: Prospect) -> Cell:
+            found = self._known(option, name)
+            return Cell(MISSING if found is None else " · ".join(range_end(end, to_number) for end in found))
+
+        return Row(label, unit, tuple(cell(option) for option in self.all))
 
     def quantiles(self, label: str, unit: str, name: str, place: int, to_number: Callable[[float], float]) -> Row:
         """Return a row of one of the three quantiles of the draws.
@@ -121,11 +140,14 @@ class Options:
         """
 
         def cell(option: Prospect) -> Cell:
-            found = quantile(option, name)
-            is_itself = option is self.all[0] and name in AGAINST_AS_IS
-            return Cell(MISSING if found is None or is_itself else range_end(found[place], to_number))
+            found = self._known(option, name)
+            return Cell(MISSING if found is None else range_end(found[place], to_number))
 
         return Row(label, unit, tuple(cell(option) for option in self.all))
+
+    def _known(self, option: Prospect, name: str) -> tuple[float, float, float] | None:
+        """Return the three quantiles; None where there are none, and of the plant as it is against itself."""
+        return None if option is self.all[0] and name in AGAINST_AS_IS else quantile(option, name)
 
     def words(self, label: str, say: Callable[[Prospect], str]) -> Row:
         """Return a row of words."""
@@ -150,16 +172,3 @@ def shown_name(option: Prospect) -> str:
 def missing_of(quantity: str) -> Callable[[Prospect], str]:
     """Return what says what is missing for a quantity of an option."""
     return lambda option: missing_words(option, quantity)
-
-
-def assumed_text(comparison: Comparison, tables: Sequence[str]) -> str:
-    """Return the defaults taken in some tables of the case, in a sentence; empty if there are none.
-
-    Args:
-        comparison: The result.
-        tables: Names of the tables.
-    """
-    found = [item for item in comparison.case.defaults if item.key.partition(".")[0] in tables]
-    if not found:
-        return ""
-    return plain(f" Assumed, not in the case: {', '.join(f'{item.key} = {item.shown_text}' for item in found)}.")

@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Callable
 from dataclasses import dataclass
 
+from retrofit.checks.changeover import chosen_for_cards
 from retrofit.report.room import has_room
 from retrofit.study import Comparison
 
@@ -44,6 +45,14 @@ def _has_law(comparison: Comparison) -> bool:
 
 def _has_readings(comparison: Comparison) -> bool:
     return comparison.baseline is not None
+
+
+def _has_unread(comparison: Comparison) -> bool:
+    return comparison.baseline is not None and bool(comparison.baseline.missing)
+
+
+def _has_cards(comparison: Comparison) -> bool:
+    return bool(chosen_for_cards(comparison).entries)
 
 
 def _has_life(comparison: Comparison) -> bool:
@@ -88,6 +97,7 @@ MAIN = (
 )
 ANNEX = (
     Section("findings", "Findings"),
+    Section("unread", "Readings: not derived", _has_unread),
     Section("components", "Components"),
     Section("room-working", "Room: working", has_room),
     Section("law-rows", "Law: row by row", _has_law),
@@ -95,6 +105,7 @@ ANNEX = (
     Section("cost-items", "First cost, item by item", _has_money),
     Section("draws", "What may be off, and by how much", _has_draws),
     Section("states", "State points"),
+    Section("job-cards", "Job card", _has_cards),
     Section("commissioning", "Commissioning sheets"),
     Section("inputs", "Inputs"),
     Section("model", "Model"),

@@ -9,6 +9,7 @@ from retrofit.report.values import composition_text
 from retrofit.study import Comparison, Entry, Point
 from retrofit.units import UnitSystem
 
+CHART_IN = 1.95  # two refrigerants on a printed page
 KINDS = (
     ("Pressure, absolute", "pressure", "p_Pa"),
     ("Temperature", "temperature", "T_K"),
@@ -30,7 +31,10 @@ class StateTable:
 
 @dataclass(frozen=True)
 class Portrait:
-    """Everything about one refrigerant by itself; without states it carries the reason."""
+    """Everything about one refrigerant by itself; without states it carries the reason.
+
+    The first that is computed has the check by hand step by step; the others have what their state points do not tell.
+    """
 
     place: int
     name: str
@@ -38,6 +42,7 @@ class Portrait:
     reason: str
     states: StateTable | None
     steps: tuple[str, ...]
+    by_hand: str
     chart: Drawing | None
 
 
@@ -48,18 +53,34 @@ def portraits(comparison: Comparison, units: UnitSystem) -> tuple[Portrait, ...]
         comparison: The result.
         units: The reader's units.
     """
-    return tuple(_portrait(comparison, place, units) for place in range(len(comparison.entries)))
+    solved = [place for place, entry in enumerate(comparison.entries) if entry.lines is not None]
+    return tuple(
+        _portrait(comparison, place, units, is_worked=place in solved[:1]) for place in range(len(comparison.entries))
+    )
 
 
-def _portrait(comparison: Comparison, place: int, units: UnitSystem) -> Portrait:
+def _portrait(comparison: Comparison, place: int, units: UnitSystem, *, is_worked: bool) -> Portrait:
     entry = comparison.entries[place]
     name, composition = entry.refrigerant.display_name, composition_text(entry.refrigerant)
     if entry.lines is None:
-        return Portrait(place, name, composition, entry.reason or "", None, (), None)
+        return Portrait(place, name, composition, entry.reason or "", None, (), "", None)
     points = on_reference(entry, units)
-    steps = hand_check(comparison, entry, points, units)
-    return Portrait(
-        place, name, composition, "", _table(entry, points, units), steps, cycle_chart(comparison, place, units)
+    steps = hand_check(comparison, entry, points, units) if is_worked else ()
+    by_hand = "" if is_worked else _by_hand(entry, units)
+    chart = cycle_chart(comparison, place, units, CHART_IN)
+    return Portrait(place, name, composition, "", _table(entry, points, units), steps, by_hand, chart)
+
+
+def _by_hand(entry: Entry, units: UnitSystem) -> str:
+    """Return what a check by hand meets beside the state points, in a sentence."""
+    assert entry.duty is not None
+    ideal = units.with_unit("temperature", entry.duty.T_discharge_isentropic_K)
+    effect = units.with_unit("specific enthalpy", entry.duty.refrigerating_effect_J_per_kg)
+    flow = units.with_unit("mass flow", entry.duty.mass_flow_kg_per_s)
+    return (
+        f"By hand, with the steps of the first refrigerant: the line of constant entropy from point 1 meets {ideal}; "
+        f"cooling of each unit of mass {effect}; mass flow {flow} for the duty of the case; "
+        f"COP {units.text('ratio', entry.duty.cop)}."
     )
 
 

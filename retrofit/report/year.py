@@ -7,11 +7,11 @@ from collections.abc import Callable
 from retrofit.checks.outlook import rounded_text
 from retrofit.checks.prospects import Prospect, life_of_result
 from retrofit.report.plain import plain
-from retrofit.report.prospect_rows import Options, assumed_text, missing_of
+from retrofit.report.prospect_rows import Options, missing_of
 from retrofit.report.table import Group, Row, Table
 from retrofit.study import Comparison
 from retrofit.study.year import YearConditions, YearRun
-from retrofit.units import MISSING, UnitSystem, format_number
+from retrofit.units import UnitSystem, format_number
 
 BY_MAKER_ONLY = "more than the maker's seasonal COP"
 HEATED = {"cooling": "cooling", "heating": "heat"}
@@ -32,7 +32,7 @@ def year_basis(comparison: Comparison, units: UnitSystem) -> str:
         f"Basis: the plant as installed over a year, {balanced}, pressures floating; "
         f"{HEATED[asked.serves]} to deliver {_energy(units, asked.load_J)} {units.label('energy')}, with what "
         f"defrosting adds. Weather: {asked.source}. A new plant is sized for today's cooling at the same exchangers, "
-        f"or goes by the seasonal COP of its maker.{assumed_text(comparison, ('year',))}"
+        "or goes by the seasonal COP of its maker."
     )
 
 
@@ -49,11 +49,10 @@ def year_table(comparison: Comparison, options: Options, units: UnitSystem) -> T
         return None
     energy, power = units.label("energy"), units.label("power")
     rows = (
-        options.words("What is done", lambda option: option.deed),
-        options.words("Plant", lambda option: option.year.machine if option.year else MISSING),
+        options.words("What is done", _done),
         _row(options, "Electricity of a year", energy, lambda year: year.energy_J, lambda v: _energy(units, v)),
         options.changes("Electricity against the plant as it is", "energy"),
-        *options.ranges("Electricity", energy, "energy_J", lambda v: _number(units, v)),
+        options.ranges("Electricity: 8 of 10 draws within", energy, "energy_J", lambda v: _number(units, v)),
         _row(options, "Peak power, mean of an hour", power, lambda year: year.peak_W, lambda v: units.text("power", v)),
         _row(options, _seasonal(asked), "", lambda year: year.seasonal_cop, lambda v: format_number(v, 2)),
         _row(options, "Compressors run", "%", lambda year: year.run_time_fraction, lambda v: format_number(100 * v, 0)),
@@ -63,6 +62,11 @@ def year_table(comparison: Comparison, options: Options, units: UnitSystem) -> T
     groups = (Group("year", f"Basis: same plant, a year, weather {plain(asked.source)}", rows),)
     caption = "A year of every option"
     return Table("year", caption, year_basis(comparison, units), options.names, groups, options.notes.listed())
+
+
+def _done(option: Prospect) -> str:
+    """Return what is done, and of a new plant which one: every other option keeps the plant that there is."""
+    return option.year.machine if option.year and option.deed == "new plant" else option.deed
 
 
 def _seasonal(asked: YearConditions) -> str:

@@ -203,7 +203,11 @@ def test_nothing_to_convert_gives_no_card_but_says_why(assessed, page_of, read_p
 
     assert not [name for name in page.ids if name.startswith(("t-card-", "t-readings-"))]
     assert "None: no candidate has a job card." in page.text
-    assert page.text.count("stopped by: ") == len(assessed("coast-heat-pump").candidates)
+    told = " ".join(page.text.split()).split("No job card: ")[1]
+    assert "stopped by: " in told
+    for entry in assessed("coast-heat-pump").candidates:
+        names, _, rest = told.partition(f"{entry.refrigerant.display_name}, ")
+        assert rest.partition("; ")[0].count("stopped by: ") == 1, names
 
 
 HOSTILE = [

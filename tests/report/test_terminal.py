@@ -90,9 +90,10 @@ def test_numbers_shown_are_the_results(comparison):
         assert number(cooling) == pytest.approx(entry.compressor.cooling_W / 1e3, abs=0.051)
         if entry.family != "keep":
             change = re.split(r"\s{2,}", row)[-1]
-            # 6 % of COP, and 8 % of R1123, whose model has nothing published to be checked against.
-            band = 0.08 if entry.grade.word == "not checked" else 0.06
-            assert change.startswith("≈") == (abs(entry.relative["cop"] - 1) <= band)
+            # 6 % of COP: every blend here is checked close to published points, and a single substance, checked or
+            # not, is solved by its own reference equation.
+            assert entry.grade.word == "close" or len(entry.refrigerant.composition) == 1
+            assert change.startswith("≈") == (abs(entry.relative["cop"] - 1) <= 0.06)
             assert number(change.lstrip("≈ ")) == pytest.approx(100 * (entry.relative["cop"] - 1), abs=0.051)
 
 
