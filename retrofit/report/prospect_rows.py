@@ -9,7 +9,6 @@ from dataclasses import dataclass
 from retrofit.checks.outlook import UNKNOWN, percent, rounded_text
 from retrofit.checks.prospects import Prospect, difference, missing_words, quantile
 from retrofit.report.judging import spelled
-from retrofit.report.plain import plain
 from retrofit.report.rows import near
 from retrofit.report.table import Cell, Notes, Row
 from retrofit.units import MISSING

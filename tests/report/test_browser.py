@@ -19,8 +19,9 @@ HEADINGS = [
     "What the law asks, and when", "Comparison on three bases", "Charts", "Hardware, component by component",
     "Charge against the room", "Method statement and way back", "Assumptions", "Limits: what was not checked",
     "Sign-off and revisions",
-    "Findings and verdict for each refrigerant", "Components, one by one", "Charge and room: the working",
-    "Law: row by row", "State points, and how to check them by hand", "Commissioning sheets",
+    "Findings and verdict for each refrigerant", "Readings: what could not be derived", "Components, one by one",
+    "Charge and room: the working",
+    "Law: row by row", "State points, and how to check them by hand", "Job card", "Commissioning sheets",
     "Inputs: values the case gives",
     "How far the model can be trusted", "Terms", "Sources",
 ]  # fmt: skip
