@@ -1,11 +1,15 @@
 // The meeting page's own script: posts forms without leaving the page, and puts the newest answer in place.
 "use strict";
 (() => {
-  const PAUSE = 200, SOON = 400, NEWS = 2000, STAYS = 6000;
+  const PAUSE = 200, SOON = 400, NEWS = 2000, STAYS = 6000, NUMBERS = "td a.how, dd a.how", known = new Map();
   const said = document.getElementById("said"), aside = document.getElementById("aside");
   const board = () => document.getElementById("board");
   const fields = (root) => root.querySelectorAll("input:not([type=hidden]), textarea, select");
   let shown = +board().dataset.version, under = 0, typed = null, timer = 0, quiet = 0, drawing = null, waiting = null, sent = new Map();
+
+  // With the script a change goes out by itself: buttons that only send a form are for pages without it.
+  const look = (name) => { document.documentElement.className = `live ${name}`; };
+  look(board().dataset.look);
 
   const isDirty = (field) => field.tagName === "SELECT"
     ? [...field.options].some((option) => option.selected !== option.defaultSelected) : field.value !== field.defaultValue;
@@ -65,7 +69,7 @@
     const [x, y] = [scrollX, scrollY];
     shown = +fresh.dataset.version;
     old.replaceWith(document.adoptNode(fresh));
-    document.documentElement.className = fresh.dataset.look;
+    look(fresh.dataset.look);
     const boxes = fresh.querySelectorAll(".scroll, .inputs");
     if (boxes.length === scrolled.length) boxes.forEach((box, i) => { [box.scrollLeft, box.scrollTop] = scrolled[i]; });
     scrollTo(x, y);
@@ -121,12 +125,15 @@
     image.src = next;
   }
 
+  // Years come a moment after the other numbers: what they were stays known meanwhile.
   function markMoved(old, fresh) {
     const isSame = +fresh.dataset.version === shown;
-    const before = new Map([...old.querySelectorAll("td a.how, dd a.how")].map((cell) => [cell.getAttribute("href"), cell]));
-    for (const cell of fresh.querySelectorAll("td a.how, dd a.how")) {
-      const was = before.get(cell.getAttribute("href"));
-      cell.classList.toggle("moved", !!was && (was.textContent !== cell.textContent || (isSame && was.classList.contains("moved"))));
+    for (const cell of old.querySelectorAll(NUMBERS)) {
+      known.set(cell.getAttribute("href"), [cell.textContent, cell.classList.contains("moved")]);
+    }
+    for (const cell of fresh.querySelectorAll(NUMBERS)) {
+      const [text, moved] = known.get(cell.getAttribute("href")) ?? [cell.textContent, false];
+      cell.classList.toggle("moved", text !== cell.textContent || (isSame && moved));
     }
   }
 

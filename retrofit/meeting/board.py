@@ -6,12 +6,12 @@ from collections.abc import Mapping
 from dataclasses import dataclass, replace
 
 from retrofit.checks import not_checked
-from retrofit.figures import mark_at
 from retrofit.meeting.changes import MEETING
 from retrofit.meeting.desk import Source
 from retrofit.meeting.freeze import Frozen
-from retrofit.meeting.how import linked, slug
+from retrofit.meeting.how import linked
 from retrofit.meeting.inputs import Group, input_groups, offered
+from retrofit.meeting.lineup import Lineup, lineup
 from retrofit.meeting.pictures import Picture, Pictures, View
 from retrofit.meeting.session import Moment, Refused
 from retrofit.meeting.side import Side, side_by_side
@@ -26,25 +26,11 @@ from retrofit.report.hardware import Matrix, matrices
 from retrofit.report.judging import Judged, judged
 from retrofit.report.page import Answered, answered, facts
 from retrofit.report.plain import plain
-from retrofit.report.table import Cell, Table
+from retrofit.report.table import Table
 from retrofit.report.values import environment_table
-from retrofit.study import Comparison, Entry
+from retrofit.study import Comparison
 from retrofit.units import UNIT_SYSTEMS, UnitSystem
 
-# The numbers of the line-up, the first that the result has of each: the rows of the comparison they are taken from.
-HEADLINES: tuple[tuple[str, tuple[str, ...]], ...] = (
-    ("Cooling against today", ("plant-full-cooling-against-today", "compressor-cooling-against-today")),
-    ("COP against today", ("plant-full-cop-at-the-same-cooling-against-today", "efficiency-cop-against-today")),
-    ("Discharge", ("temperatures-discharge-temperature",)),
-    ("Condensing", ("pressures-condensing-pressure-gauge",)),
-    ("GWP AR5", ("is-gwp-ipcc-ar5-100-years",)),
-)
-TODAY: tuple[tuple[str, tuple[str, ...]], ...] = (
-    ("Cooling", ("plant-full-cooling-at-full", "compressor-cooling")),
-    ("COP", ("plant-full-cop-at-full", "efficiency-cop-cooling-over-compressor-power")),
-    ("Discharge", ("temperatures-discharge-temperature",)),
-    ("Condensing", ("pressures-condensing-pressure-gauge",)),
-)
 SECTIONS = {
     "lineup": "Line-up",
     "cautions": "Cautions",
@@ -57,30 +43,6 @@ SECTIONS = {
     "notes": "Notes",
     "freeze": "Freeze",
 }
-
-
-@dataclass(frozen=True)
-class Player:
-    """One refrigerant in the line-up.
-
-    Attributes:
-        designation, judged: Which, and what the checks say of it.
-        place: Where it stands among those in sight; 0 is today's.
-        cells: Its numbers, one for each headline.
-        is_pinned, is_added, is_beside: What the meeting did with it.
-        note: What the meeting noted on it.
-    """
-
-    designation: str
-    judged: Judged
-    place: int
-    marker: str
-    colour: str
-    cells: tuple[Cell, ...]
-    is_pinned: bool
-    is_added: bool
-    is_beside: bool
-    note: str
 
 
 @dataclass(frozen=True)
@@ -108,9 +70,7 @@ class Board:
     answer: Answered
     convention: str
     band: str
-    headlines: tuple[tuple[str, str], ...]
-    today: tuple[tuple[str, str, Cell], ...]
-    players: tuple[Player, ...]
+    lineup: Lineup
     hidden: tuple[tuple[str, Judged], ...]
     catalogue: tuple[str, ...]
     deference: str
@@ -165,6 +125,7 @@ def build_board(moment: Moment, source: Source, pictures: Pictures) -> Board:
     every, _ = judged(whole)
     by_name = {e.refrigerant.designation: item for e, item in zip(whole.entries, every, strict=True)}
     comparison, environment = tables(view, units)
+    life, follows = life_tables(view, units), outcome.is_current and not outcome.is_whole
     keys = offered(source.data)
     known = {*keys, "designation", "freeze"}  # inputs that show by themselves what is wrong
     return Board(
@@ -178,7 +139,7 @@ def build_board(moment: Moment, source: Source, pictures: Pictures) -> Board:
         number={name: str(place) for place, name in enumerate(SECTIONS, start=1)},
         sections=tuple(SECTIONS.items()),
         working=outcome.working,
-        follows=outcome.is_current and not outcome.is_whole,
+        follows=follows,
         problem=outcome.problem,
         undo=moment.undo,
         redo=moment.redo,
@@ -189,9 +150,7 @@ def build_board(moment: Moment, source: Source, pictures: Pictures) -> Board:
         answer=answered(view, units),
         convention=convention(whole),
         band=band_text(view, units),
-        headlines=_headings(comparison, HEADLINES),
-        today=_today(comparison),
-        players=_players(view, state, by_name, comparison),
+        lineup=lineup(view, state, by_name, (comparison, *life), follows),
         hidden=tuple((name, by_name[name]) for name in state.hidden if name in by_name),
         catalogue=tuple(name for name in designations() if name not in by_name),
         deference=DEFERENCE,
@@ -201,51 +160,13 @@ def build_board(moment: Moment, source: Source, pictures: Pictures) -> Board:
         weighing=weighing(view, state),
         comparison=comparison,
         environment=environment,
-        life=life_tables(view, units),
+        life=life,
         pictures=pictures.pictures(state, View(view, state.units)) if outcome.is_current else (),
         matrices=matrices(view),
         notes=_notes(whole, state),
         frozen=moment.frozen,
         not_checked=not_checked(view),
     )
-
-
-def _row_of(table: Table, names: tuple[str, ...]) -> tuple[str, str, tuple[Cell, ...]] | None:
-    """Return slug, unit and cells of the first of some rows that a table has."""
-    rows = {slug(group, row): row for group in table.groups for row in group.rows}
-    return next(((name, rows[name].unit, rows[name].cells) for name in names if name in rows), None)
-
-
-def _headings(table: Table, wanted: tuple[tuple[str, tuple[str, ...]], ...]) -> tuple[tuple[str, str], ...]:
-    found = ((label, _row_of(table, names)) for label, names in wanted)
-    return tuple((label, row[1]) for label, row in found if row)
-
-
-def _today(table: Table) -> tuple[tuple[str, str, Cell], ...]:
-    found = ((label, _row_of(table, names)) for label, names in TODAY)
-    return tuple((label, row[1], row[2][0]) for label, row in found if row)
-
-
-def _players(view: Comparison, state: State, by_name: Mapping[str, Judged], table: Table) -> tuple[Player, ...]:
-    rows = [row[2] for _, names in HEADLINES if (row := _row_of(table, names))]
-    notes = dict(state.notes)
-
-    def player(place: int, entry: Entry) -> Player:
-        name, mark = entry.refrigerant.designation, mark_at(view, place)
-        return Player(
-            designation=name,
-            judged=by_name[name],
-            place=place,
-            marker=mark.marker,
-            colour="currentColor" if place == 0 else mark.colour,
-            cells=tuple(cells[place] for cells in rows),
-            is_pinned=name in state.pinned,
-            is_added=name in state.added,
-            is_beside=name in state.beside,
-            note=notes.get(name, ""),
-        )
-
-    return tuple(player(place, entry) for place, entry in enumerate(view.entries))
 
 
 def _notes(comparison: Comparison, state: State) -> tuple[tuple[str, str, str], ...]:

@@ -146,8 +146,17 @@ def reasons(entry: Entry) -> str:
     Args:
         entry: An assessed refrigerant.
     """
+    return "; ".join(deciding(entry))
+
+
+def deciding(entry: Entry) -> tuple[str, ...]:
+    """Return the titles of the findings that decide the verdict one by one, or in a word that there are none.
+
+    Args:
+        entry: An assessed refrigerant.
+    """
     for level in ("stop", "unknown", "work"):
         titles = dict.fromkeys(spelled(finding.title) for finding in entry.findings if finding.level == level)
         if titles:
-            return "; ".join(titles)
-    return "nothing found by the checks made here"
+            return tuple(titles)
+    return ("nothing found by the checks made here",)

@@ -1,6 +1,7 @@
 """Forms without a script: each changes the newest state, and what is wrong is shown where it was written."""
 
 import re
+import time
 
 import pytest
 
@@ -139,10 +140,10 @@ def test_steps_and_a_whole_side_move(client):
 def test_hide_show_and_pin(client, read):
     """A hidden candidate is named with its verdict and what decides it; a pinned one stands first; today's stays."""
     page = client.change("hide R448A")
-    columns = re.findall(r'<th scope="row">.*? (R-[0-9A-Z]+)<span class="unit">', page)
+    columns = re.findall(r'<th scope="row" rowspan="2">.*? (R-[0-9A-Z]+)<span class="unit">', page)
     hidden = re.search(r'<ul class="hidden-list">.*?</ul>', page, re.DOTALL)[0]
     client.change("show R448A")
-    pinned = re.findall(r'<th scope="row">.*? (R-[0-9A-Z]+)<span class="unit">', client.change("pin R454C"))
+    pinned = re.findall(r'<th scope="row" rowspan="2">.*? (R-[0-9A-Z]+)<span class="unit">', client.change("pin R454C"))
 
     assert columns == ["R-404A", "R-454C"]
     assert "R-448A" in read(hidden)[1]
@@ -264,7 +265,7 @@ def test_a_refrigerant_keeps_its_mark(client):
     def marks(act, **fields):
         client.change(act, **fields)
         board = build_board(client.session.moment(), client.session.source, client.app.extensions["meeting"].pictures)
-        return {player.designation: (player.marker, player.colour) for player in board.players}
+        return {player.designation: (player.marker, player.colour) for player in board.lineup.players}
 
     first = marks("add", designation="R449A") | marks("add", designation="R407A")
     hidden, dropped = marks("hide R448A"), marks("drop R449A")
@@ -274,3 +275,38 @@ def test_a_refrigerant_keeps_its_mark(client):
     for found in (hidden, dropped, back):
         assert {name: first[name] for name in found if name in first} == {n: m for n, m in found.items() if n in first}
     assert back["R407H"] not in first.values()
+
+
+def test_the_line_up_has_what_a_client_asks_for(client, read):
+    """What all need is told once, the years come with their notes, and each number is that of its table."""
+    while not client.session.moment().outcome.is_whole:
+        time.sleep(0.02)
+    client.change("add", designation="R449A")
+    while not client.session.moment().outcome.is_whole:
+        time.sleep(0.02)
+    board = build_board(client.session.moment(), client.session.source, client.app.extensions["meeting"].pictures)
+    (table,) = (table for table in board.life if table.name == "money")
+    saving = {g.name: g for g in table.groups}["yearly"].rows[-1]
+    shown = {player.designation: player for player in board.lineup.players}
+    labels = [label for label, _ in board.lineup.headings]
+
+    assert labels[-2:] == ["First cost", "Saving"]
+    assert "R-448A and R-449A alike" in board.lineup.shared
+    assert "Work that every conversion needs" in board.lineup.shared
+    assert "Work that every conversion needs" not in shown["R448A"].reasons
+    assert "Less mild safety class" in shown["R454C"].reasons
+    for name, place in (("R448A", "R-448A"), ("R454C", "R-454C")):
+        assert shown[name].cells[-1].text == saving.cells[table.columns.index(place)].text
+    told = {mark for player in shown.values() for cell in player.cells for mark in cell.marks}
+    assert told == {note.mark for note in board.lineup.notes}
+    assert [label for label, _, _ in board.lineup.today][:2] == ["Cooling", "COP"]
+
+
+def test_what_rules_a_candidate_out_is_told_at_that_candidate(client):
+    """Only work is told once for several; two candidates with the same stop both carry it."""
+    client.change("add", designation="R454A")
+    board = build_board(client.session.moment(), client.session.source, client.app.extensions["meeting"].pictures)
+    stopped = [player for player in board.lineup.players if player.judged.verdict == "does not suit"]
+
+    assert len(stopped) == 2
+    assert all("Less mild safety class" in player.reasons for player in stopped)
