@@ -6,7 +6,7 @@ Read one with `read_case`; every complaint arrives at once in a `CaseFileError`.
 from retrofit.case.compressor import Compressor, Polynomial
 from retrofit.case.emissions import EDITIONS, Emissions, GridYear, TopUp
 from retrofit.case.exchangers import Condenser, Evaporator, Exchanger
-from retrofit.case.keys import meaning, quantity
+from retrofit.case.keys import meaning, quantity, sum_of_money
 from retrofit.case.laid import as_key, as_text, as_toml, as_value, laid_over
 from retrofit.case.law import EQUIPMENT, Law
 from retrofit.case.logo import Logo
@@ -79,4 +79,5 @@ __all__ = [
     "new_case_text",
     "quantity",
     "read_case",
+    "sum_of_money",
 ]

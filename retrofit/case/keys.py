@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import Any
 
 from retrofit.case.model import Case, field_of
-from retrofit.case.money import Options
+from retrofit.case.money import Options, Range
 from retrofit.case.values import FileValue
 
 
@@ -28,10 +28,31 @@ def quantity(case: Case, key: str) -> tuple[str, float] | None:
         key: Its full name, such as "duty.cooling" or "lines.suction.diameter". [-]
     Returns: Kind of quantity as `UnitSystem.displays` names it, and value [SI]; None if there is no one quantity.
     """
-    attribute, field = field_of(key) or ("", None)
-    value: Any = case
-    for part in (*key.split(".")[:-1], attribute):
-        value = value.named(part) if isinstance(value, Options) else getattr(value, part, None)
+    _, field = field_of(key) or ("", None)
+    value = _held(case, key)
     how = next((extra for extra in (field.metadata if field else ()) if isinstance(extra, FileValue)), None)
     is_number = isinstance(value, int | float)
     return (how.shown_kind(), value) if how and how.shown_kind() and is_number else None
+
+
+def sum_of_money(case: Case, key: str) -> Range | None:
+    """Return the sum of money that a case holds for a key.
+
+    Args:
+        case: The case.
+        key: Its full name, such as "money.tariff" or "money.refrigerant_price.R448A". [-]
+    Returns: Lowest, base and highest [currency]; None if the key holds no sum.
+    """
+    table, _, name = key.rpartition(".")
+    prices = dict(case.money.refrigerant_price or ()) if case.money and table == "money.refrigerant_price" else {}
+    value = prices.get(name) or _held(case, key)
+    return value if isinstance(value, Range) else None
+
+
+def _held(case: Case, key: str) -> Any:
+    """Return what a case holds for a key, whatever it is; None for nothing."""
+    attribute, _ = field_of(key) or ("", None)
+    value: Any = case
+    for part in (*key.split(".")[:-1], attribute):
+        value = value.named(part) if isinstance(value, Options) else getattr(value, part, None)
+    return value

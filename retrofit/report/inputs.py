@@ -22,6 +22,9 @@ INSTEAD = {
         for exchanger in ("evaporator", "condenser")
         for key, other in (("flow", "outlet"), ("specific_heat", "outlet"), ("outlet", "flow"))
     },
+    "year.weather": ("year.bins", "year.climate"),
+    "year.bins": ("year.weather", "year.climate"),
+    "year.climate": ("year.weather", "year.bins"),
 }
 
 

@@ -112,6 +112,14 @@ def test_a_key_that_another_one_stands_for_is_not_missing(case):
     assert "outlet" not in found.get("condenser", ())
 
 
+def test_one_way_to_give_the_weather_is_enough(assessed):
+    """The three ways exclude each other, so with a climate neither a file nor bins are missing."""
+    found = {item.table: item.keys for item in missing(assessed("harbour-market").case)}
+
+    assert not {"weather", "bins", "climate"} & set(found["year"])
+    assert "pumps" in found["year"]
+
+
 def test_what_is_built_in_follows_the_case(case, case_of):
     """With exchangers the pressures float, without them temperatures are held; with points efficiencies vary."""
     points = {"efficiency_points": [[2, 0.62, 0.92], [4, 0.70, 0.86], [8, 0.66, 0.74]]}

@@ -1,4 +1,4 @@
-"""The spreadsheet read back by another library: five tables, real numbers equal to the JSON's, texts never formulas."""
+"""The spreadsheet read back by another library: one table a sheet, numbers equal to the JSON's, no formulas."""
 
 import io
 import zipfile
@@ -12,8 +12,8 @@ from retrofit.report.spreadsheet import render_spreadsheet, require_spreadsheet
 from retrofit.report.spreadsheet.results import FULL, OPERATION, QUANTITIES, RATIOS
 from retrofit.units import IP, SI
 
-SHEETS = ["Read me", "Inputs", "Results", "Points", "Sources"]
-FROZEN = {"Read me": "C2", "Inputs": "B2", "Results": "C2", "Points": "D2", "Sources": "C2"}
+SHEETS = ["Read me", "Inputs", "Results", "Points", "Year", "Sources"]
+FROZEN = {"Read me": "C2", "Inputs": "B2", "Results": "E2", "Points": "D2", "Year": "D2", "Sources": "C2"}
 WHERE = {
     "same duty": ("duty",),
     "same compressor": ("compressor",),
@@ -36,13 +36,13 @@ def rows_of(book, name):
 
 
 @pytest.fixture(scope="module")
-def book(assessed, made_at):
-    """Return the spreadsheet of a case with all three bases, in metric units."""
-    return opened(render_spreadsheet(assessed("harbour-market"), made_at=made_at))
+def book(lived, made_at):
+    """Return the spreadsheet of a case with all three bases, a year and the remaining life, in metric units."""
+    return opened(render_spreadsheet(lived("harbour-market"), made_at=made_at))
 
 
 def test_one_table_a_sheet_with_frozen_headings_and_a_filter(book):
-    """Five sheets by their names; one heading for each column, none merged, none twice, no empty row."""
+    """The sheets by their names; one heading for each column, none merged, none twice, no empty row."""
     assert book.sheetnames == SHEETS
     for sheet in book:
         headings = [cell.value for cell in sheet[1]]
@@ -57,7 +57,7 @@ def test_one_table_a_sheet_with_frozen_headings_and_a_filter(book):
 
 def test_the_first_columns_are_names(book):
     """What a row is stands first, and a unit in the heading of every quantity that has one."""
-    assert [cell.value for cell in book["Results"][1]][:2] == ["Refrigerant", "Basis"]
+    assert [cell.value for cell in book["Results"][1]][:4] == ["Refrigerant", "Basis", "What is done", "Value"]
     assert [cell.value for cell in book["Points"][1]][:3] == ["Refrigerant", "Point", "State"]
     headings = [cell.value for cell in book["Results"][1]]
     assert {"Cooling (kW)", "Condensing pressure (bar a)", "Discharge temperature (°C)", "COP"} <= set(headings)

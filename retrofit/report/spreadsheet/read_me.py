@@ -7,20 +7,27 @@ from datetime import datetime
 from pathlib import PurePath
 
 from retrofit.checks import answer, not_checked
+from retrofit.checks.outlook import outlook
+from retrofit.checks.prospects import life_of_result
 from retrofit.report.carried.made_with import versions_of
 from retrofit.report.carried.result import fingerprint
 from retrofit.report.cautioning import DEFERENCE, caution_groups
+from retrofit.report.certainty import method
 from retrofit.report.comparing import convention
+from retrofit.report.emissions import left_out
 from retrofit.report.judging import spelled
 from retrofit.report.spreadsheet.table import Column, Sheet
 from retrofit.study import Comparison
+from retrofit.study.emissions import FORMULA
+from retrofit.study.money import FORMULAS
 from retrofit.units import UnitSystem
 
 COLUMNS = (Column("Topic", width=14), Column("About", width=34), Column("Text", width=100), Column("Source", width=30))
 HELD = {
     "Inputs": "Every key of the case: given, assumed with its reason, or left out.",
-    "Results": "One row for each refrigerant and basis.",
+    "Results": "One row for each refrigerant and basis; of a year and the remaining life for each option and value.",
     "Points": "One row for each refrigerant and state point of its cycle.",
+    "Year": "Months, then outdoor temperatures, of every option: the same year sorted twice, so add up one of them.",
     "Sources": "Every catalogue value, caution and threshold behind the results, with where it comes from.",
 }
 READING = (
@@ -29,6 +36,8 @@ READING = (
     ("Ratios", "A ratio to today is the value with the candidate over the value with the refrigerant in the plant."),
     ("Verdicts", "A verdict covers what was checked here and nothing else; none says that a plant is without danger."),
 )
+AS_IS = "Savings and CO2e avoided count against the plant as it is; below 0 it is more than with the plant as it is."
+PRICES = "Prices stay as they are today, in the currency that the heading names; nothing is converted."
 Row = tuple[str, str, str, str]
 
 
@@ -40,7 +49,8 @@ def read_me_sheet(comparison: Comparison, units: UnitSystem, made_at: datetime) 
         units: The reader's units.
         made_at: The time to print.
     """
-    rows = (*_about(comparison, units, made_at), *_cautions(comparison), *_reading(comparison))
+    life = _life(comparison, units) if comparison.life else ()
+    rows = (*_about(comparison, units, made_at), *_cautions(comparison), *life, *_reading(comparison))
     return Sheet("Read me", 2, COLUMNS, tuple(rows))
 
 
@@ -73,5 +83,29 @@ def _reading(comparison: Comparison) -> Iterator[Row]:
     yield "How to read", "Convention", convention(comparison), ""
     for about, text in READING:
         yield "How to read", about, text, ""
+    has_year = comparison.life is not None and comparison.life.asked is not None
     for name, text in HELD.items():
-        yield "Sheet", name, text, ""
+        if name != "Year" or has_year:
+            yield "Sheet", name, text, ""
+
+
+def _life(comparison: Comparison, units: UnitSystem) -> Iterator[Row]:
+    """Yield the answer of the remaining life, how it was drawn, and what is left out."""
+    topic, words, life = "Remaining life", outlook(comparison, units), life_of_result(comparison)
+    for text in (*(matter.text for matter in words.matters), words.stopped, words.meter, words.swing, *words.ranking):
+        if text:
+            yield topic, "Answer", spelled(text), ""
+    yield topic, "Differences", AS_IS, ""
+    if life.certainty:
+        yield topic, "Draws", str(life.draws), ""
+        yield topic, "Seed", str(life.seed), ""
+    for text in method(comparison):
+        yield topic, "How sure it is", spelled(text), ""
+    if comparison.case.emissions:
+        yield topic, "How warming is reckoned", FORMULA, ""
+        for text in left_out(comparison):
+            yield topic, "Left out, as in every TEWI", text, ""
+    if comparison.case.money:
+        for name, text in FORMULAS.items():
+            yield topic, f"How {name} is reckoned", text, ""
+        yield topic, "Money", PRICES, ""

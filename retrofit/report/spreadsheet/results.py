@@ -1,12 +1,14 @@
-"""The sheet of results: one row for each refrigerant and basis, in the reader's units."""
+"""The sheet of results: a row for each refrigerant and basis, a year and the remaining life with them."""
 
 from __future__ import annotations
 
 from collections.abc import Mapping
 
+from retrofit.checks.prospects import DEEDS
 from retrofit.refrigerants import GWP_BASES
 from retrofit.report.cautioning import DEFERENCE
 from retrofit.report.judging import FAMILY_WORDS, LEVEL_WORDS, spelled
+from retrofit.report.spreadsheet.options import BASE, option_columns, option_rows
 from retrofit.report.spreadsheet.table import GAPS, Column, Content, Sheet, as_rows, in_units, quantity_column
 from retrofit.study import Comparison, Entry, Performance
 from retrofit.units import UnitSystem
@@ -69,7 +71,7 @@ RATIOS: Mapping[str, Mapping[str, str]] = {
 }
 RATIO_HEADINGS = ("Cooling", "Power", "COP", "Heat rejected", "Mass flow", "Swept volume")
 NO_PLANT = "the case does not describe the exchangers: give [evaporator] and [condenser]"
-NOT_SET = "ratios to today, run time and the like that do not belong to this basis"
+NOT_SET = "columns that do not belong to this basis"
 Row = dict[str, Content]
 
 
@@ -84,9 +86,21 @@ def results_sheet(comparison: Comparison, units: UnitSystem) -> Sheet:
         (entry, basis, performance) for entry in comparison.entries for basis, performance in _bases(entry).items()
     ]
     performances = [performance for _, _, performance in found]
-    columns = (*_identity(), *_quantities(performances, units), *_operation(comparison, units), *_ratios(), *_words())
-    rows = (_row(entry, basis, performance, units) for entry, basis, performance in found)
-    return Sheet("Results", 2, columns, as_rows(columns, rows))
+    shared = {heading for heading, _ in OPERATION.values()}
+    columns = (
+        *_identity(),
+        *_quantities(performances, units),
+        *_operation(comparison, units),
+        *_ratios(),
+        *(column for column in option_columns(comparison, units) if column.name not in shared),
+        *_words(),
+    )
+    rows = [_row(comparison, entry, basis, performance, units) for entry, basis, performance in found]
+    rows += [
+        {**_common(row.entry), **row.cells, GAPS: "; ".join([*_common_gaps(row.entry), *row.gaps, NOT_SET])}
+        for row in option_rows(comparison, units)
+    ]
+    return Sheet("Results", 4, columns, as_rows(columns, rows))
 
 
 def _bases(entry: Entry) -> dict[str, Performance[float] | None]:
@@ -98,7 +112,9 @@ def _bases(entry: Entry) -> dict[str, Performance[float] | None]:
 def _identity() -> tuple[Column, ...]:
     return (
         Column("Refrigerant"),
-        Column("Basis", width=26),
+        Column("Basis", width=20),
+        Column("What is done", width=14),
+        Column("Value", width=12),
         Column("Family", width=22),
         Column("Verdict", width=16),
         Column("Cautions", width=60),
@@ -135,11 +151,11 @@ def _words() -> tuple[Column, ...]:
     return Column("Findings", width=60), Column(GAPS, width=60), Column("Who decides", width=60)
 
 
-def _row(entry: Entry, basis: str, found: Performance[float] | None, units: UnitSystem) -> Row:
+def _common(entry: Entry) -> Row:
+    """Return what stands in every row of a refrigerant, whatever the basis."""
     refrigerant = entry.refrigerant
-    row: Row = {
+    return {
         "Refrigerant": refrigerant.display_name,
-        "Basis": basis,
         "Family": FAMILY_WORDS[entry.family],
         "Verdict": entry.verdict,
         "Cautions": "; ".join(caution.title for caution in entry.cautions),
@@ -147,9 +163,13 @@ def _row(entry: Entry, basis: str, found: Performance[float] | None, units: Unit
         **{f"GWP, {name}": getattr(refrigerant, key).number for key, name in GWP_BASES.items()},
         "Model": entry.grade.word if entry.grade else None,
         "Findings": "; ".join(f"{LEVEL_WORDS[item.level]}: {spelled(item.title)}" for item in entry.findings),
-        GAPS: _gaps(entry, found, basis),
         "Who decides": DEFERENCE,
     }
+
+
+def _row(comparison: Comparison, entry: Entry, basis: str, found: Performance[float] | None, units: UnitSystem) -> Row:
+    deed = DEEDS["as is" if entry is comparison.existing else entry.family]
+    row = _common(entry) | {"Basis": basis, "What is done": deed, "Value": BASE, GAPS: _gaps(entry, found, basis)}
     if found is not None:
         for name, (heading, kind) in QUANTITIES.items():
             row[heading] = in_units(kind, getattr(found, name), units)
@@ -163,13 +183,17 @@ def _row(entry: Entry, basis: str, found: Performance[float] | None, units: Unit
 
 def _gaps(entry: Entry, found: Performance[float] | None, basis: str) -> str:
     """Return why cells of a row are empty, in words."""
-    refrigerant = entry.refrigerant
-    blank = [name for key, name in GWP_BASES.items() if getattr(refrigerant, key).number is None]
-    gaps = [f"GWP, {name}: not stated" for name in blank]
-    gaps += [] if refrigerant.safety_class.value else ["safety class: not stated"]
-    gaps += [] if entry.grade else ["model: none"]
+    gaps = _common_gaps(entry)
     if found is None:
         return "; ".join(
             [*gaps, entry.reason or (entry.plant_reason or NO_PLANT if "plant" in basis else "not computed")]
         )
     return "; ".join([*gaps, NOT_SET])
+
+
+def _common_gaps(entry: Entry) -> list[str]:
+    refrigerant = entry.refrigerant
+    blank = [name for key, name in GWP_BASES.items() if getattr(refrigerant, key).number is None]
+    gaps = [f"GWP, {name}: not stated" for name in blank]
+    gaps += [] if refrigerant.safety_class.value else ["safety class: not stated"]
+    return gaps + ([] if entry.grade else ["model: none"])

@@ -36,7 +36,7 @@ def require_spreadsheet() -> None:
 
 
 def render_spreadsheet(comparison: Comparison, units: str = "si", *, made_at: datetime) -> bytes:
-    """Return the result as a workbook of five sheets.
+    """Return the result as a workbook of five sheets, and one more of the year if there is one.
 
     Args:
         comparison: An assessed result.
@@ -66,14 +66,17 @@ def _sheets(comparison: Comparison, units: str, made_at: datetime) -> tuple[Shee
     from retrofit.report.spreadsheet.read_me import read_me_sheet
     from retrofit.report.spreadsheet.results import results_sheet
     from retrofit.report.spreadsheet.sources import sources_sheet
+    from retrofit.report.spreadsheet.year import year_sheet
     from retrofit.units import UNIT_SYSTEMS
 
     system = UNIT_SYSTEMS[units]
+    year = year_sheet(comparison, system)
     return (
         read_me_sheet(comparison, system, made_at),
-        inputs_sheet(comparison.case, system),
+        inputs_sheet(comparison, system),
         results_sheet(comparison, system),
         points_sheet(comparison, system),
+        *([year] if year else []),
         sources_sheet(comparison),
     )
 

@@ -1,0 +1,141 @@
+"""Rows of the sheet of results for a year and the remaining life of every option, in base values and of the draws."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Iterator
+from dataclasses import dataclass
+
+from retrofit.checks.prospects import Prospect, is_alike, prospects, quantile
+from retrofit.report.judging import spelled
+from retrofit.report.spreadsheet.measures import (
+    A_YEAR,
+    NEVER,
+    Measure,
+    column_of,
+    is_itself,
+    known,
+    measures,
+    reason,
+    scale_of,
+)
+from retrofit.report.spreadsheet.table import Column, Content
+from retrofit.study import Comparison, Entry
+from retrofit.study.money import payback_words
+from retrofit.units import UnitSystem, listed
+
+BASE = "base"
+DRAWN = {0: "10 % of draws below", 1: "50 % of draws below", 2: "90 % of draws below"}
+ALIKE, NOT_COUNTED, IN_WORDS = "No meaningful difference in", "Not counted", "Payback in words"
+OF_BASE = "only the base value is kept"
+# By basis: what an option may show no meaningful difference from the plant as it is in.
+COMPARED = {A_YEAR: {"energy": "electricity", "saving": "yearly saving"}}
+COMPARED_OVER_LIFE = {"emissions": "warming", "cost": "cost over the remaining life"}
+
+
+@dataclass(frozen=True)
+class OptionRow:
+    """A row: the option's refrigerant, its cells by heading, and why some of them are empty."""
+
+    entry: Entry
+    cells: dict[str, Content]
+    gaps: list[str]
+
+
+def option_columns(comparison: Comparison, units: UnitSystem) -> tuple[Column, ...]:
+    """Return the columns that the rows of a year and the remaining life need beside those of the design point.
+
+    Args:
+        comparison: An assessed result.
+        units: The reader's units.
+    """
+    options = prospects(comparison) if comparison.life else ()
+    found = [
+        column_of(measure, [known(measure, option) for option in options], comparison, units)
+        for numbers in measures(comparison).values()
+        for measure in numbers
+    ]
+    words = (Column(IN_WORDS, width=30), Column(ALIKE, width=30), Column(NOT_COUNTED, width=60)) if found else ()
+    return (*found, *words)
+
+
+def option_rows(comparison: Comparison, units: UnitSystem) -> Iterator[OptionRow]:
+    """Yield the rows of every option, basis by basis: the base values, then those of the draws.
+
+    Args:
+        comparison: An assessed result.
+        units: The reader's units.
+    """
+    for basis, numbers in measures(comparison).items():
+        options = prospects(comparison)
+        for option in options:
+            yield _base_row(comparison, units, basis, numbers, (options[0], option))
+            if option.certainty is not None:
+                for place in DRAWN:
+                    yield _drawn_row(comparison, units, basis, numbers, option, place)
+
+
+def _base_row(
+    comparison: Comparison,
+    units: UnitSystem,
+    basis: str,
+    numbers: tuple[Measure, ...],
+    pair: tuple[Prospect, Prospect],
+) -> OptionRow:
+    as_is, option = pair
+    row, gaps = _named(option, basis, BASE), dict[str, list[str]]()
+    for measure in numbers:
+        value = known(measure, option)
+        row[measure.heading] = None if value is None else scale_of(measure.kind, comparison, units).to_number(value)
+        if value is None:
+            gaps.setdefault(reason(measure, option), []).append(measure.heading)
+    return OptionRow(option.entry, row | _words(basis, as_is, option), _told(gaps))
+
+
+def _drawn_row(
+    comparison: Comparison,
+    units: UnitSystem,
+    basis: str,
+    numbers: tuple[Measure, ...],
+    option: Prospect,
+    place: int,
+) -> OptionRow:
+    """Return the values that a share of the draws stays below; a payback without end is empty, and why."""
+    row, gaps = _named(option, basis, DRAWN[place]), dict[str, list[str]]()
+    for measure in numbers:
+        found = quantile(option, measure.drawn) if measure.drawn and not is_itself(measure, option) else None
+        if found is not None and math.isfinite(found[place]):
+            row[measure.heading] = scale_of(measure.kind, comparison, units).to_number(found[place])
+        elif measure.drawn:
+            why = reason(measure, option) if found is None else NEVER
+            gaps.setdefault(why, []).append(measure.heading)
+    return OptionRow(option.entry, row, [*_told(gaps), f"all other numbers: {OF_BASE}"])
+
+
+def _named(option: Prospect, basis: str, value: str) -> dict[str, Content]:
+    return {"Basis": basis, "What is done": option.deed, "Value": value}
+
+
+def _told(gaps: dict[str, list[str]]) -> list[str]:
+    return [f"{', '.join(headings)}: {spelled(why)}" for why, headings in gaps.items()]
+
+
+def _words(basis: str, as_is: Prospect, option: Prospect) -> dict[str, Content]:
+    """Return what is to be said beside the numbers: what the model cannot tell apart, and what is not counted."""
+    if option is as_is:
+        return {}
+    compared = COMPARED.get(basis, COMPARED_OVER_LIFE)
+    alike = [text for quantity, text in compared.items() if is_alike(as_is, option, quantity)]
+    words: dict[str, Content] = {
+        ALIKE: listed(alike, "and") if alike else None,
+        NOT_COUNTED: _not_counted(basis, option),
+    }
+    appraisal = option.account.appraisal
+    return words | ({IN_WORDS: payback_words(appraisal)} if appraisal and basis != A_YEAR else {})
+
+
+def _not_counted(basis: str, option: Prospect) -> str:
+    saving, first = option.account.saving, option.account.first_cost
+    if basis == A_YEAR:
+        return spelled("; ".join(saving.not_counted)) if saving else ""
+    return "; ".join(first.not_counted) if first else ""
