@@ -139,6 +139,11 @@ def _with_life_if_asked(comparison: Comparison) -> Comparison:
     return with_life(comparison)
 
 
+def _one_of(as_json: bool, as_csv: bool) -> None:
+    if as_json and as_csv:
+        raise click.UsageError("--json and --csv exclude each other")
+
+
 def _print_json(value: object) -> None:
     click.echo(json.dumps(value, indent=1, allow_nan=False))
 
@@ -225,8 +230,7 @@ def check(case_file: Path) -> None:
 @_guarded
 def compare(case_file: Path, units: str, as_json: bool, as_csv: bool, on: datetime | None) -> None:
     """Compare the candidates of a CASE with the refrigerant in the plant."""
-    if as_json and as_csv:
-        raise click.UsageError("--json and --csv exclude each other")
+    _one_of(as_json, as_csv)
     comparison = _compared(case_file, on)
     if as_json:
         from retrofit.report.machine import comparison_json
@@ -261,10 +265,12 @@ def compare(case_file: Path, units: str, as_json: bool, as_csv: bool, on: dateti
     show_default=True,
     help="The same seed gives the same draws.",
 )
+@click.option("--csv", "as_csv", is_flag=True, help="One line an option, in SI base units.")
 @on_option
 @_guarded
-def year(case_file: Path, units: str, as_json: bool, draws: int, seed: int, on: datetime | None) -> None:
+def year(case_file: Path, units: str, as_json: bool, draws: int, seed: int, as_csv: bool, on: datetime | None) -> None:
     """Tell year, warming, money and how sure they are of every option of a CASE."""
+    _one_of(as_json, as_csv)
     from retrofit.study.life import with_life
 
     comparison = with_life(_compared(case_file, on), draws, seed)
@@ -272,6 +278,10 @@ def year(case_file: Path, units: str, as_json: bool, draws: int, seed: int, on: 
         from retrofit.report.machine_year import year_json
 
         _print_json(year_json(comparison))
+    elif as_csv:
+        from retrofit.report.year_lines import year_csv
+
+        click.echo(year_csv(comparison), nl=False)
     else:
         from retrofit.report.terminal_year import year_text
         from retrofit.units import UNIT_SYSTEMS

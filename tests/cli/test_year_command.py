@@ -53,3 +53,14 @@ def test_report_tells_money_where_the_case_has_it(run, with_money, tmp_path):
 
     assert run("report", str(with_money), "-o", str(out)).exit_code == 0
     assert 'id="money"' in out.read_text(encoding="utf-8")
+
+
+def test_csv_has_a_line_an_option(run, with_money):
+    """A heading and one line for each option; it excludes JSON."""
+    result = run("year", str(with_money), "--csv", "--draws", "0")
+    heading, *lines = result.stdout.splitlines()
+
+    assert result.exit_code == 0
+    assert heading.startswith("refrigerant,deed,safety_class,cautions,currency,")
+    assert [line.partition(",")[0] for line in lines] == ["R134a", "R513A", "R290"]
+    assert run("year", str(with_money), "--csv", "--json").exit_code == 2

@@ -1,11 +1,14 @@
 """The JSON of the remaining life: plain numbers in SI, the same bytes for the same seed, and sums that add up."""
 
+import csv
+import io
 import json
 
 import numpy as np
 import pytest
 
 from retrofit.report.machine_year import SCHEMA, year_json
+from retrofit.report.year_lines import year_csv
 from retrofit.study.life import with_life
 
 HARBOUR = "harbour-market"
@@ -112,3 +115,30 @@ def test_no_saving_is_no_number(lived):
     assert found["R290"]["money"]["payback_words"].startswith("never")
     assert found["R290"]["year"]["monthly_J"] is None
     assert found["R290"]["certainty"]["carries_probability"] is None
+
+
+def test_csv_is_the_json(lived):
+    """Each number of the CSV, read back, is that of the JSON; a payback that never comes is empty and said."""
+    for name in (HARBOUR, "freezer-store"):
+        rows = list(csv.DictReader(io.StringIO(year_csv(lived(name)))))
+        options = year_json(lived(name))["options"]
+
+        assert [(row["refrigerant"], row["deed"]) for row in rows] == [(o["refrigerant"], o["deed"]) for o in options]
+        checked = 0
+        for row, option in zip(rows, options, strict=True):
+            assert row["cautions"]
+            for column, text in row.items():
+                found = option
+                for part in column.split("."):
+                    found = found.get(part) if isinstance(found, dict) else None
+                if isinstance(found, float):
+                    assert float(text) == found, column
+                    checked += 1
+                elif found is None and column not in ("cautions", "currency", "safety_class"):
+                    assert text == "", column
+        assert checked > 60 * len(options)
+    worse = next(row for row in rows if row["refrigerant"] == "R452A")
+    assert worse["money.payback_years"] == ""
+    assert worse["money.payback_words"].startswith("never")
+    assert {"year.energy_J", "emissions.total_kg", "money.first_cost_currency.base"} <= set(worse)
+    assert not {"year.monthly_J", "money", "year.map"} & set(worse)
