@@ -84,14 +84,16 @@ def _overlay(comparison: Comparison, group: list[Placed], units: UnitSystem, num
         limit = limit_line(axes, comparison, units, box)
         if group[0][0] == 0:
             assert group[0][1].lines is not None
-            temperature_ticks(axes, group[0][1].lines, units, _pressures(group[0][1], units), limit)
+            others = [entry.lines for _, entry in group[1:] if entry.lines is not None]
+            temperature_ticks(axes, group[0][1].lines, units, _pressures(group[0][1], units), limit, others)
         _end_labels(axes, comparison, group, units)
         name = f"overlay-{number + 1}"
         title = f"Pressure-enthalpy chart with the cycles of {names}"
         described = "; ".join(_cycle_words(entry, units) for _, entry in group)
         svg = to_svg(figure, name, title, described)
     caption = (
-        f"Cycles of {names} on the same axes, pressure on a logarithmic scale. The thick cycle is today's"
+        f"Cycles of {names} on the same axes, pressure on a logarithmic scale. The thick cycle is today's; the "
+        f"small numbers are its temperatures in {units.label('temperature')}, along its bubble line"
         if group[0][0] == 0
         else f"Cycles of {names} on the same axes, pressure on a logarithmic scale"
     )

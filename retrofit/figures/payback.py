@@ -14,6 +14,7 @@ from retrofit.figures.style import INK, SMALL_PT, THIN
 from retrofit.study import Comparison
 from retrofit.units import format_number
 
+ROOM_BELOW = 0.1  # for the words under the line, as a share of the axis above it
 OFF_SCALE = 3.0  # times what most options cost
 
 
@@ -34,7 +35,8 @@ def payback_chart(comparison: Comparison) -> Drawing | None:
         life = max(float(x[-1]) for x, _ in lines)
         axes.set_xlim(0.0, life)
         axes.margins(y=0.08)
-        axes.set_ylim(axes.get_ylim())
+        low, high = axes.get_ylim()
+        axes.set_ylim(min(low, -ROOM_BELOW * high), high)
         thousands(axes.yaxis)
         upright(axes, life, f"end of the remaining life, {life:g} years", "right")
         named = [(o, f"{label_of(o)}{_after(o)}") for o in options]

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from typing import Any
 
 import numpy as np
@@ -41,7 +42,12 @@ def log_ticks(axes: Any, limits: tuple[float, float]) -> None:
 
 
 def temperature_ticks(
-    axes: Any, lines: ChartLines, units: UnitSystem, isobars: list[float], limit: float | None
+    axes: Any,
+    lines: ChartLines,
+    units: UnitSystem,
+    isobars: list[float],
+    limit: float | None,
+    others: Sequence[ChartLines] = (),
 ) -> None:
     """Mark round temperatures along both saturation lines, so that a log pressure can be read by them.
 
@@ -51,6 +57,8 @@ def temperature_ticks(
         units: The reader's units.
         isobars: Pressures where the cycle runs; a label that would lie on one is left out. [units of the axis]
         limit: Pressure of a limit line, kept clear too; None for none. [units of the axis]
+        others: Saturation lines of what else stands in the chart. With some, only the bubble line is labelled, left of
+            all of theirs: within the domes a label would lie on lines.
     """
     low, high = axes.get_ylim()
     T = units.number("temperature", lines.T_K)
@@ -64,10 +72,26 @@ def temperature_ticks(
             on_limit = limit is not None and abs(np.log(at_p / limit) / np.log(high / low)) < LABEL_SHARE[0]
             # A dew label stands inside the dome, if there is room for it.
             is_narrow = h_line is lines.h_dew_J_per_kg and at_h - float(np.interp(value, T, h_bubble)) < room
-            if not on_limit and not is_narrow and _is_free(np.log(at_p / np.asarray(isobars)) / np.log(high / low)):
+            is_crossed = bool(others) and h_line is lines.h_dew_J_per_kg
+            if (
+                not on_limit
+                and not is_narrow
+                and not is_crossed
+                and _is_free(np.log(at_p / np.asarray(isobars)) / np.log(high / low))
+            ):
                 text = f"{value:g}".replace("-", "\N{MINUS SIGN}")
-                axes.annotate(text, (at_h, at_p), (-5, 0), textcoords="offset points", ha="right", va="center",
+                axes.annotate(text, (_leftmost(at_h, at_p, others, units), at_p), (-5, 0), textcoords="offset points", ha="right", va="center",
                               fontsize=SMALL_PT)  # fmt: skip
+
+
+def _leftmost(at_h: float, at_p: float, others: Sequence[ChartLines], units: UnitSystem) -> float:
+    """Return the smallest of an enthalpy and those of other bubble lines at its pressure."""
+    found = [at_h]
+    for lines in others:
+        p = np.asarray(units.number("pressure", lines.p_bubble_Pa))
+        if p[0] <= at_p <= p[-1]:
+            found.append(float(np.interp(at_p, p, enthalpies(lines, lines.h_bubble_J_per_kg, units))))
+    return min(found)
 
 
 def _is_free(heights: Any) -> bool:

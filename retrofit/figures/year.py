@@ -273,7 +273,7 @@ def _marked(upper: Any, lower: Any, axis: Axis, units: UnitSystem) -> None:
             upright(axes, low, words[0], "left", (0, (1, 2)))
             upright(axes, high, words[1], "right", (0, (1, 2)))
         if hottest is not None:
-            upright(axes, hottest, f"hottest day {hottest:.0f}" if axes is upper else "", "center")
+            upright(axes, hottest, f"hottest day {hottest:.0f}" if axes is upper else "", "left")
     lower.axhline(lower.get_ylim()[0], color=INK, linewidth=HAIRLINE)
 
 
