@@ -80,7 +80,8 @@ def temperature_ticks(
                 and _is_free(np.log(at_p / np.asarray(isobars)) / np.log(high / low))
             ):
                 text = f"{value:g}".replace("-", "\N{MINUS SIGN}")
-                axes.annotate(text, (_leftmost(at_h, at_p, others, units), at_p), (-5, 0), textcoords="offset points", ha="right", va="center",
+                at = (_leftmost(at_h, at_p, others, units), at_p)
+                axes.annotate(text, at, (-5, 0), textcoords="offset points", ha="right", va="center",
                               fontsize=SMALL_PT)  # fmt: skip
 
 
