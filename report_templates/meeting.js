@@ -15,7 +15,7 @@
     ? [...field.options].some((option) => option.selected !== option.defaultSelected) : field.value !== field.defaultValue;
 
   // What is under way or follows is always asked for again, whatever its version.
-  const isOpen = () => board().dataset.working || board().dataset.follows;
+  const isOpen = () => board().dataset.working || board().dataset.follows || board().dataset.writing;
   const news = () => ask(`/news?seen=${isOpen() ? 0 : shown}`);
 
   function say(text, stays) {

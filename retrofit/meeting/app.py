@@ -8,10 +8,10 @@ from datetime import datetime
 from typing import TYPE_CHECKING, Any
 
 from retrofit.case import laid_over
-from retrofit.errors import CaseFileError, RetrofitError
+from retrofit.errors import RetrofitError
 from retrofit.meeting.board import build_board, in_sight, tables
 from retrofit.meeting.changes import change_of
-from retrofit.meeting.freeze import LONGEST_WHAT, case_text, freeze, whole
+from retrofit.meeting.freeze import LONGEST_WHAT, case_text, whole
 from retrofit.meeting.how import how
 from retrofit.meeting.pictures import Pictures, View
 from retrofit.meeting.security import (
@@ -26,6 +26,7 @@ from retrofit.meeting.security import (
     secure,
 )
 from retrofit.meeting.session import Moment, Session
+from retrofit.meeting.writer import Writer
 from retrofit.meeting.years import how_of_option
 from retrofit.report import render_html
 from retrofit.report.guard import POLICY
@@ -47,13 +48,14 @@ class Meeting:
     def __init__(self, session: Session) -> None:
         self.session = session
         self.token = new_token()
+        self.writer = Writer(session)
         self.pictures = Pictures(lambda: session.desk.is_idle)
         self.script = (built_in_folder() / "meeting.js").read_text(encoding="utf-8")
 
     def page(self, is_part: bool) -> Response:
         """Return the page, or the part of it that changes."""
         moment = self.session.moment()
-        board = build_board(moment, self.session.source, self.pictures)
+        board = build_board(moment, self.session.source, self.pictures, self.writer.said)
         cautions, nonce = render_cautions(board), secrets.token_urlsafe(16)
         template = "meeting-board.html" if is_part else "meeting.html"
         html = filled(template, board=board, page=board, cautions=cautions, token=self.token, nonce=nonce)
@@ -72,19 +74,9 @@ class Meeting:
         self.session.apply(change_of(self.session.source, form), version, has_inputs)
 
     def freeze(self, request: Request) -> None:
-        """Write the present state as a revision; what hinders it is shown on the page."""
-        moment = self.session.moment()
+        """Begin to write the present state as a revision; what hinders it is shown on the page."""
         what = " ".join(plain(request.form.get("what", "")).split())[:LONGEST_WHAT] or "without remark"
-        try:
-            made = freeze(self.session.source, moment.state, what, datetime.now().astimezone())
-        except CaseFileError as error:
-            self.session.complain("; ".join(problem.text for problem in error.problems))
-        except RetrofitError as error:
-            self.session.complain(error.message)
-        except OSError as error:
-            self.session.complain(f"the files cannot be written: {error.strerror}")
-        else:
-            self.session.freeze(made)
+        self.writer.begin(what, datetime.now().astimezone())
 
     def how(self, name: str, quantity: str, is_part: bool) -> Response | None:
         """Return how a number comes about, None if there is no such number."""

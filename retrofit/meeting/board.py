@@ -60,6 +60,7 @@ class Board:
     sections: tuple[tuple[str, str], ...]
     working: str
     follows: bool
+    writing: str
     problem: str
     undo: str
     redo: str
@@ -112,13 +113,14 @@ def tables(view: Comparison, units: UnitSystem) -> tuple[Table, Table]:
     return linked(comparison_table(view, units), names), linked(environment_table(view, units), names)
 
 
-def build_board(moment: Moment, source: Source, pictures: Pictures) -> Board:
+def build_board(moment: Moment, source: Source, pictures: Pictures, writing: str = "") -> Board:
     """Return everything the page shows at a moment.
 
     Args:
         moment: State and result.
         source: The case file the meeting began with.
         pictures: Where charts are drawn.
+        writing: What is being written, in words; empty if nothing. [-]
     """
     state, outcome, whole = moment.state, moment.outcome, moment.outcome.comparison
     units, view = UNIT_SYSTEMS[state.units], in_sight(moment)
@@ -140,6 +142,7 @@ def build_board(moment: Moment, source: Source, pictures: Pictures) -> Board:
         sections=tuple(SECTIONS.items()),
         working=outcome.working,
         follows=follows,
+        writing=writing,
         problem=outcome.problem,
         undo=moment.undo,
         redo=moment.redo,

@@ -11,6 +11,7 @@ from typing import TYPE_CHECKING, Any
 from retrofit.errors import PortError
 from retrofit.meeting.app import create_app
 from retrofit.meeting.session import Session
+from retrofit.meeting.writer import WRITING
 
 if TYPE_CHECKING:
     from werkzeug.serving import BaseWSGIServer
@@ -86,4 +87,6 @@ def serve(session: Session, port: int, is_opened: bool, say: Callable[[str], Non
         pass
     finally:
         server.server_close()
+    if any(thread.name == WRITING for thread in threading.enumerate()):
+        say("A revision is being written and is finished first.")
     say("The meeting is over.")

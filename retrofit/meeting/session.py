@@ -73,6 +73,11 @@ class Session:
         """Return the number of the present state."""
         return self._history.version
 
+    @property
+    def state(self) -> State:
+        """Return the present state."""
+        return self._history.now
+
     def apply(self, change: Change, seen: int, has_inputs: bool = True) -> bool:
         """Make a change on the newest state, whatever state the page it comes from showed.
 

@@ -30,6 +30,7 @@ class Client:
     def __init__(self, session):
         self.session = session
         self.app = create_app(session)
+        self.app.extensions["meeting"].writer.patience_s = 60.0
         self.token = self.app.extensions["meeting"].token
         self.http = self.app.test_client()
 

@@ -6,6 +6,7 @@ import time
 import pytest
 
 from retrofit.meeting.board import build_board
+from retrofit.meeting.lineup import HEADLINES, TODAY
 
 
 def field(html, key):
@@ -300,6 +301,16 @@ def test_the_line_up_has_what_a_client_asks_for(client, read):
     told = {mark for player in shown.values() for cell in player.cells for mark in cell.marks}
     assert told == {note.mark for note in board.lineup.notes}
     assert [label for label, _, _ in board.lineup.today][:2] == ["Cooling", "COP"]
+
+
+def test_every_number_of_the_line_up_is_found(watched):
+    """With a year, emissions and money in the case no heading lacks its row in the report's tables."""
+    while not watched.session.moment().outcome.is_whole:
+        time.sleep(0.02)
+    board = build_board(watched.session.moment(), watched.session.source, watched.app.extensions["meeting"].pictures)
+
+    assert [label for label, _ in board.lineup.headings] == [item.label for item in HEADLINES]
+    assert [label for label, _, _ in board.lineup.today] == [item.label for item in TODAY]
 
 
 def test_what_rules_a_candidate_out_is_told_at_that_candidate(client):

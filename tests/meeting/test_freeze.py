@@ -1,12 +1,15 @@
 """Freezing: a whole case file and its report beside the original, and nothing else anywhere."""
 
 import re
+import threading
+import time
 import tomllib
 
 import pytest
 
 from retrofit.case import as_key, as_toml, laid_over, read_case
 from retrofit.checks import assess
+from retrofit.meeting import writer
 from retrofit.meeting.freeze import whole_toml
 from retrofit.study import compare
 from tests.meeting.conftest import ROOT
@@ -131,3 +134,36 @@ def test_a_revision_of_the_case_is_counted_on(case_file):
 
     frozen = read_case(case_file.with_name("market-rev-c.toml"))
     assert [row.rev for row in frozen.report.revisions] == ["A", "B", "C"]
+
+
+def test_a_revision_that_takes_long_is_told_and_finished(client, case_file, read, monkeypatch):
+    """The page says at once what is written and renews itself without a script; what is changed meanwhile is not in it."""
+    gate, whole = threading.Event(), writer.freeze
+    monkeypatch.setattr(writer, "freeze", lambda *parts: gate.wait(30.0) and whole(*parts))
+    own = client.app.extensions["meeting"].writer
+    own.patience_s = 0.01
+    page = client.change(path="/freeze", what="First talk")
+    second = client.change(path="/freeze", what="Too soon")
+    client.change(**{"in.duty.condensing": "47 degC"})
+    gate.set()
+    until = time.monotonic() + 60.0
+    while own.is_writing and time.monotonic() < until:
+        time.sleep(0.02)
+
+    assert "Writing the revision and its report, 0 s so far" in read(page)[1]
+    assert 'http-equiv="refresh"' in page
+    assert "still being written" in read(second)[1]
+    assert "market-rev-a.html" in client.page()
+    assert 'http-equiv="refresh"' not in client.page()
+    assert 'condensing = "42 degC"' in case_file.with_name("market-rev-a.toml").read_text(encoding="utf-8")
+
+
+def test_a_fault_while_writing_is_told(client, case_file, monkeypatch):
+    """A bug in the writing leaves no file, says that it was one, and the next revision is written."""
+    monkeypatch.setattr(writer, "freeze", lambda *parts: 1 / 0)
+    broken = client.change(path="/freeze", what="x")
+    monkeypatch.undo()
+    after = client.change(path="/freeze", what="y")
+
+    assert "Not frozen: by a fault of the program" in broken
+    assert "market-rev-a.html" in after

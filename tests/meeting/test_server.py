@@ -85,3 +85,30 @@ def test_a_port_that_is_taken_is_told(started):
     assert process.returncode == 1
     assert "cannot be had" in said
     assert "Traceback" not in said
+
+
+def test_the_end_waits_for_a_revision_and_not_for_a_browser(started, case_file):
+    """Ctrl-C while a revision is written: both files are there; an open connection that says nothing stops nothing."""
+    process, address = started()
+    port = int(address.rstrip("/").rpartition(":")[2])
+    with urllib.request.urlopen(address, timeout=20) as answer:
+        token = re.search(r'name="token" value="([^"]+)"', answer.read().decode())[1]
+    form = f"token={token}&what=end".encode()
+    head = f"POST /freeze HTTP/1.1\r\nHost: 127.0.0.1:{port}\r\nContent-Type: application/x-www-form-urlencoded\r\n"
+    with (
+        socket.create_connection(("127.0.0.1", port), timeout=5),
+        socket.create_connection(("127.0.0.1", port), timeout=5) as asking,
+    ):
+        asking.sendall(head.encode() + f"Content-Length: {len(form)}\r\n\r\n".encode() + form)
+        until = time.monotonic() + 20.0
+        while not case_file.with_name("market-rev-a.toml").exists() and time.monotonic() < until:
+            time.sleep(0.01)
+        process.send_signal(signal.SIGINT)
+        out, err = process.communicate(timeout=60)
+
+    assert process.returncode == 0
+    assert "The meeting is over" in out
+    assert "Traceback" not in err
+    assert sorted(path.name for path in case_file.parent.iterdir()) == [
+        "market-rev-a.html", "market-rev-a.toml", "market.toml",
+    ]  # fmt: skip
