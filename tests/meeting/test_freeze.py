@@ -137,7 +137,7 @@ def test_a_revision_of_the_case_is_counted_on(case_file):
 
 
 def test_a_revision_that_takes_long_is_told_and_finished(client, case_file, read, monkeypatch):
-    """The page says at once what is written and renews itself without a script; what is changed meanwhile is not in it."""
+    """The page says at once what is written, and renews itself without a script; later changes are not in it."""
     gate, whole = threading.Event(), writer.freeze
     monkeypatch.setattr(writer, "freeze", lambda *parts: gate.wait(30.0) and whole(*parts))
     own = client.app.extensions["meeting"].writer
