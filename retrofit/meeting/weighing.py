@@ -19,11 +19,12 @@ from retrofit.study.ranking import (
     SCALE,
     Order,
     Scores,
+    Stability,
     flip,
     order,
     rank_stability,
     score,
-    stability_words,
+    share_text,
 )
 
 HEAVIEST = int(LARGEST_WEIGHT)
@@ -42,13 +43,21 @@ class Weight:
 
 @dataclass(frozen=True)
 class Ranked:
-    """One option in the order, as texts: its place, its sum, and its score by each criterion that counts."""
+    """One option in the order, as texts.
+
+    Attributes:
+        place, name, total: Its place, its name, and its sum.
+        share: The sum as a part of the largest there can be. [%]
+        scores: Its score by each criterion that counts, and whether that is not known.
+        firsts: How often it comes first, and how often alone: drawn around the weights, and over all weightings.
+    """
 
     place: str
     name: str
     total: str
     share: int
     scores: tuple[tuple[str, bool], ...]
+    firsts: tuple[tuple[str, str], ...]
 
 
 @dataclass(frozen=True)
@@ -60,7 +69,7 @@ class Weighing:
         columns: The criteria that count.
         ranked: Options in order.
         gated: Options that are not ranked, with the gate or the reason.
-        remarks: Ties, rank stability, what would turn the order, and what counts as the worst for lack of data.
+        remarks: How rank stability is meant, what would turn the order, ties, and what counts as the worst.
         scale: How scores are made.
     """
 
@@ -85,36 +94,42 @@ def weighing(view: Comparison, state: State) -> Weighing:
     bands = {entry.refrigerant.designation: band_of(entry, "cop") for entry in view.entries}
     scores = score(view, measured, bands)
     found = order(scores, weights)
+    used = [weights[name] for name in scores.criteria]
+    stabilities = [
+        rank_stability(scores.scores, around, doubts=scores.doubts) for around in (used, None) if scores.names
+    ]
     names = {entry.refrigerant.designation: entry.refrigerant.display_name for entry in view.entries}
     return Weighing(
         weights=tuple(
             Weight(item.name, int(weights[item.name]), item.measure, item.name in scores.criteria) for item in measured
         ),
         columns=scores.criteria,
-        ranked=_ranked(scores, found, names),
+        ranked=_ranked(scores, found, names, stabilities),
         gated=tuple((names[name], spelled(why)) for name, why in scores.not_ranked.items()),
-        remarks=tuple(spelled(text) for text in _remarks(scores, found, weights)),
+        remarks=tuple(spelled(text) for text in _remarks(scores, found, weights, stabilities)),
         scale=SCALE,
     )
 
 
-def _ranked(scores: Scores, found: Order, names: Mapping[str, str]) -> tuple[Ranked, ...]:
+def _ranked(scores: Scores, found: Order, names: Mapping[str, str], stabilities: list[Stability]) -> tuple[Ranked, ...]:
     def row(place: int, name: str, total: float) -> Ranked:
         at = scores.names.index(name)
         cells = zip(scores.scores[at].tolist(), scores.is_unknown[at].tolist(), strict=True)
         texts = tuple((f"{value:.2f}", is_unknown) for value, is_unknown in cells)
         shared = "=" if found.places.count(place) > 1 else ""
-        return Ranked(f"{place}{shared}", names[name], f"{total:.2f}", round(100 * total), texts)
+        firsts = tuple((share_text(item.first[at]), share_text(item.alone[at])) for item in stabilities)
+        return Ranked(f"{place}{shared}", names[name], f"{total:.2f}", round(100 * total), texts, firsts)
 
     return tuple(row(*item) for item in zip(found.places, found.names, found.totals, strict=True))
 
 
-def _remarks(scores: Scores, found: Order, weights: Mapping[str, float]) -> list[str]:
+def _remarks(scores: Scores, found: Order, weights: Mapping[str, float], stabilities: list[Stability]) -> list[str]:
     if not scores.names:
         return []
-    used = [weights[name] for name in scores.criteria]
+    drawn = " and ".join(item.drawn for item in stabilities)
     remarks = [
-        stability_words(scores, rank_stability(scores.scores, around, doubts=scores.doubts)) for around in (used, None)
+        f"Comes first: in how many of {stabilities[0].sets} weight sets drawn {drawn}, with no other better by more "
+        "than the band; in brackets how often alone, better than every other by more than the band."
     ]
     turned = flip(scores, {name: weights[name] for name in scores.criteria})
     if turned:

@@ -243,15 +243,19 @@ def stability_words(scores: Scores, found: Stability) -> str:
         return "No option is ranked."
     ranked = sorted(range(len(scores.names)), key=lambda i: -found.first[i])
     parts = [
-        f"{scores.names[i]} comes first in {_percent(found.first[i])} of them ({_percent(found.alone[i])} alone)"
+        f"{scores.names[i]} comes first in {share_text(found.first[i])} of them ({share_text(found.alone[i])} alone)"
         for i in ranked
         if found.first[i] > 0.0
     ]
     return f"Of {found.sets} weight sets drawn {found.drawn}: {'; '.join(parts)}."
 
 
-def _percent(share: float) -> str:
-    """Return a share as whole percent, 0 % and 100 % for none and all alone."""
+def share_text(share: float) -> str:
+    """Return a share as whole percent, 0 % and 100 % for none and all alone.
+
+    Args:
+        share: The share. [-]
+    """
     whole = round(100.0 * share)
     if whole == 0 and share > 0.0:
         return "less than 1 %"

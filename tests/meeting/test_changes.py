@@ -221,7 +221,8 @@ def test_weights_change_the_order_and_gates_stay_gates(client, read):
         ways.append(re.findall(r'<tr><td class="n">[0-9=]+</td><th scope="row">([^<]*)</th>', page))
         gated = read(re.search(r'<ul class="gated">.*?</ul>', page, re.DOTALL)[0])[1]
         assert "R-454C is not ranked:" in gated
-        assert "weight sets drawn" in page
+        assert "weight sets drawn around the weights of the meeting and over all weightings alike" in page
+        assert re.search(r'<td class="n first">[0-9]+ % <span class="quiet">\([0-9]+ %\)', page)
 
     assert ways[0] != ways[1]
     assert all("R-454C" not in way for way in ways)
