@@ -27,7 +27,7 @@ from retrofit.meeting.security import (
 )
 from retrofit.meeting.session import Moment, Session
 from retrofit.meeting.writer import Writer
-from retrofit.meeting.years import how_of_option
+from retrofit.meeting.years import OPTION, how_of_option
 from retrofit.report import render_html
 from retrofit.report.guard import POLICY
 from retrofit.report.judging import judged
@@ -82,7 +82,7 @@ class Meeting:
         """Return how a number comes about, None if there is no such number."""
         moment = self.session.moment()
         units, view = UNIT_SYSTEMS[moment.state.units], in_sight(moment)
-        if name.startswith("option-"):
+        if name.startswith(OPTION):
             told = how_of_option(view, name, quantity, units, moment.state)
             return self._aside("meeting-how.html", is_part, moment, how=told, chart="") if told else None
         found = how(view, tables(view, units), name, quantity, units, moment.state)

@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import re
 from dataclasses import replace
 
 from retrofit.checks.prospects import prospects
@@ -18,7 +17,7 @@ from retrofit.study.emissions import FORMULA
 from retrofit.study.money import FORMULAS
 from retrofit.units import MISSING, UnitSystem
 
-OPTION = re.compile(r"option-([0-9]{1,2})")
+OPTION = "option-"  # begins the name of an option in addresses; a candidate that is hidden changes no other's
 WORDS = {
     "year": "Power times hours, summed over the year: the plant as installed is balanced at the weather and load "
     "of each group of like hours, with what fans, pumps and defrosting take.",
@@ -41,14 +40,20 @@ def life_tables(view: Comparison, units: UnitSystem) -> tuple[Table, ...]:
         emissions_table(view, _options(view), units) if view.case.emissions else None,
         money_table(view, _options(view)),
     )
-    return tuple(_linked(table) for table in found if table is not None)
+    names = _names(view)
+    return tuple(_linked(table, names) for table in found if table is not None)
+
+
+def _names(view: Comparison) -> tuple[str, ...]:
+    """Return the name of each option, as it stands in addresses."""
+    return tuple(OPTION + option.name.replace(" ", "-") for option in prospects(view))
 
 
 def _options(view: Comparison) -> Options:
     return Options(prospects(view), Notes())
 
 
-def _linked(table: Table) -> Table:
+def _linked(table: Table, names: tuple[str, ...]) -> Table:
     """Return a table without rows that say nothing, its numbers with where their origin is told."""
     groups = []
     for group in table.groups:
@@ -57,10 +62,10 @@ def _linked(table: Table) -> Table:
             if all(cell.text == MISSING for cell in row.cells):
                 continue
             cells = tuple(
-                replace(cell, href=f"/how/option-{place}/{slug(group, row)}")
+                replace(cell, href=f"/how/{name}/{slug(group, row)}")
                 if cell.is_number and cell.text != MISSING
                 else cell
-                for place, cell in enumerate(row.cells)
+                for name, cell in zip(names, row.cells, strict=True)
             )
             rows.append(replace(row, cells=cells))
         groups.append(replace(group, rows=tuple(rows)))
@@ -72,17 +77,19 @@ def how_of_option(view: Comparison, name: str, quantity: str, units: UnitSystem,
 
     Args:
         view: What is in sight.
-        name: "option-" and its place among the columns. [-]
+        name: "option-" and the name of the option. [-]
         quantity: Name of the row as `slug` gives it. [-]
         units: The reader's units.
         state: The state, for where an input comes from.
     """
-    match = OPTION.fullmatch(name)
-    for table in life_tables(view, units) if match else ():
+    names = _names(view) if view.life else ()
+    if name not in names:
+        return None
+    place = names.index(name)
+    for table in life_tables(view, units):
         for group in table.groups:
             for row in group.rows:
-                place = int(match[1]) if match else 0
-                if slug(group, row) == quantity and place < len(row.cells):
+                if slug(group, row) == quantity:
                     inputs: tuple[From, ...] = tuple(
                         input_from(view, key, units, state) for key in formulas()["inputs"][table.name]
                     )

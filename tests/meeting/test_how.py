@@ -2,6 +2,7 @@
 
 import math
 import re
+import time
 
 import pytest
 
@@ -101,13 +102,11 @@ def test_every_link_of_the_page_is_answered(watched):
 
 def test_numbers_of_the_years_have_an_origin_too(watched, read):
     """Year, warming and money stand on the page once they are there; each number leads to how it is reckoned."""
-    import time
-
     while not watched.session.moment().outcome.is_whole:
         time.sleep(0.02)
     page = watched.page()
     links = sorted(set(re.findall(r'href="(/how/option-[^"]+)"', page)))
-    text = read(watched.get("/how/option-1/tewi-sum").get_data(as_text=True))[1]
+    text = read(watched.get("/how/option-R448A/tewi-sum").get_data(as_text=True))[1]
 
     for heading in ("A year of every option", "What it costs and saves"):
         assert heading in read(page)[1]
@@ -115,4 +114,16 @@ def test_numbers_of_the_years_have_an_origin_too(watched, read):
     assert [link for link in links if watched.get(link).status_code != 200] == []
     assert "TEWI = GWP x leak rate x charge x years" in text
     assert "emissions.leak_rate_after" in text
-    assert watched.get("/how/option-99/tewi-sum").status_code == 404
+    assert watched.get("/how/option-R999/tewi-sum").status_code == 404
+
+
+def test_an_address_belongs_to_its_option(client, read):
+    """A window that does not know yet of a hidden candidate is told of the number it shows, not a neighbour's."""
+    while not client.session.moment().outcome.is_whole:
+        time.sleep(0.02)
+    before = read(client.get("/how/option-R454C/tewi-sum").get_data(as_text=True))[1]
+    client.change("hide R448A")
+
+    assert "R-454C: " in before
+    assert read(client.get("/how/option-R454C/tewi-sum").get_data(as_text=True))[1] == before
+    assert client.get("/how/option-R448A/tewi-sum").status_code == 404
