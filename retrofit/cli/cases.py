@@ -1,0 +1,44 @@
+"""Commands that write and read a case file."""
+
+from __future__ import annotations
+
+import json
+from pathlib import Path
+
+import click
+
+from retrofit.cli.options import CASE
+from retrofit.cli.shell import fail, guarded
+
+
+@click.command()
+@click.argument("case_file", type=CASE, metavar="FILE")
+@click.option("--force", is_flag=True, help="Overwrite files that are there.")
+@guarded
+def new(case_file: Path, force: bool) -> None:
+    """Write a new case FILE to fill in, and its schema for editors beside it."""
+    from retrofit.case import SCHEMA_FILE, case_schema, new_case_text
+    from retrofit.report.files import write_whole
+
+    schema = case_file.parent / SCHEMA_FILE
+    if case_file.name == SCHEMA_FILE:
+        fail(f"{SCHEMA_FILE} is the name of the schema written beside the case; choose another name", 2)
+    if case_file.exists() and not force:
+        fail(f"{case_file} is there already; choose another name or add --force", 1)
+    write_whole(case_file, new_case_text())
+    write_whole(schema, json.dumps(case_schema(), indent=1) + "\n")
+    click.echo(f"Wrote {case_file} and {schema}. Fill it in, then: retrofit check {case_file}")
+
+
+@click.command()
+@click.argument("case_file", type=CASE, metavar="CASE")
+@guarded
+def check(case_file: Path) -> None:
+    """Read a CASE file and name every problem in it."""
+    from retrofit.case import read_case
+    from retrofit.units import shown
+
+    case = read_case(case_file)
+    click.echo(f"{shown(str(case_file), 500)}: can be used. Candidates: {', '.join(case.compare.candidates)}.")
+    for default in case.defaults:
+        click.echo(f"  assumed: {default.key} = {default.shown_text} ({default.why})")

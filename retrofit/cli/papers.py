@@ -1,0 +1,143 @@
+"""Commands that write a report or a job card, and that compute a report again."""
+
+from __future__ import annotations
+
+import sys
+from datetime import datetime
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+import click
+
+from retrofit.cli.computed import compared, with_life_if_asked
+from retrofit.cli.options import (
+    CASE,
+    OWN_NAME,
+    form_option,
+    json_option,
+    on_option,
+    report_units_option,
+    units_option,
+)
+from retrofit.cli.shell import columns, fail, guarded, print_json, say_build, strong
+
+if TYPE_CHECKING:
+    from retrofit.report.carried import Carried
+
+READ_WITH = {"html": " Open it in a browser; print it from there for paper or PDF.", "pdf": "", "xlsx": ""}
+
+
+@click.command()
+@click.argument("case_file", type=CASE, metavar="CASE")
+@click.option("-o", "--output", type=CASE, help="HTML file to write; the case's name with .html if left out.")
+@form_option("--pdf", "Write a PDF; its name, or the case's with .pdf. Without -o no HTML then.")
+@form_option("--xlsx", "Write a spreadsheet; its name, or the case's with .xlsx. Without -o no HTML then.")
+@report_units_option
+@click.option("--templates", type=CASE, help="Folder of your own templates, laid over the built-in ones.")
+@on_option
+@guarded
+def report(
+    case_file: Path,
+    output: Path | None,
+    pdf: Path | None,
+    xlsx: Path | None,
+    units: str,
+    templates: Path | None,
+    on: datetime | None,
+) -> None:
+    """Write the report of a CASE as one HTML file, as PDF or as spreadsheet, each whole or not at all."""
+    from retrofit.report.files import write_whole
+    from retrofit.report.outputs import render_forms, require
+
+    paths = _report_paths(case_file, {"html": output, "pdf": pdf, "xlsx": xlsx})
+    require(paths)
+    comparison = with_life_if_asked(compared(case_file, on))
+    contents = render_forms(paths, comparison, units, templates, made_at=datetime.now().astimezone())
+    for form, path in paths.items():
+        write_whole(path, contents[form])
+        click.echo(f"Wrote {path}.{READ_WITH[form]}")
+
+
+def _report_paths(case_file: Path, asked: dict[str, Path | None]) -> dict[str, Path]:
+    """Return where to write each form asked for; of several, none over another or over the case."""
+    named = {form: path for form, path in asked.items() if path is not None} or {"html": OWN_NAME}
+    paths = {form: Path(f"{case_file.stem}.{form}") if path == OWN_NAME else path for form, path in named.items()}
+    places = [case_file.resolve(), *(path.resolve() for path in paths.values())]
+    if len(set(places)) < len(places):
+        raise click.UsageError("the files to write have to differ from each other and from the case")
+    return paths
+
+
+@click.command(epilog="Exit status: 0 nothing differs; 1 something differs, or the file cannot be used; 2 wrong usage.")
+@click.argument("report_file", type=CASE, metavar="REPORT")
+@json_option
+@click.option("--case", "case_file", type=CASE, metavar="FILE", help="Write the case of the REPORT to FILE instead.")
+@click.option("--force", is_flag=True, help="Overwrite the FILE of --case if it is there.")
+@guarded
+def rerun(report_file: Path, as_json: bool, case_file: Path | None, force: bool) -> None:
+    """Compute the case that an HTML REPORT carries again, and say whether anything differs and why."""
+    from retrofit.report import carried
+
+    kept = carried.read_carried(report_file)
+    if case_file:
+        _write_case(kept, case_file, force)
+        return
+    found = carried.rerun(kept, say_build)
+    if as_json:
+        print_json(carried.rerun_json(found))
+    else:
+        click.echo(carried.rerun_text(found, columns(), strong()))
+    sys.exit(1 if found.differs else 0)
+
+
+def _write_case(kept: Carried, case_file: Path, force: bool) -> None:
+    from retrofit.report.files import write_whole
+    from retrofit.units import shown
+
+    if case_file.exists() and not force:
+        fail(f"{case_file} is there already; choose another name or add --force", 1)
+    write_whole(case_file, kept.case_text)
+    click.echo(f"Wrote {case_file}, the case of {kept.name}.")
+    if "case" in kept.altered:
+        click.echo("It was edited in the report: its digest does not fit.", err=True)
+    if kept.files:
+        names = ", ".join(shown(name) for name in kept.files)
+        click.echo(f"The report was made with {names} beside its case; computing it again uses them.", err=True)
+
+
+@click.command()
+@click.argument("case_file", type=CASE, metavar="CASE")
+@click.argument("refrigerant", metavar="REFRIGERANT")
+@click.option("-o", "--output", type=CASE, help="File to write; the case's name and the refrigerant if left out.")
+@click.option("--inlet", metavar="TEMPERATURE", help='Air or water at the condenser on the day, such as "27 degC".')
+@units_option
+@click.option("--templates", type=CASE, help="Folder of your own templates, laid over the built-in ones.")
+@on_option
+@guarded
+def commission(
+    case_file: Path,
+    refrigerant: str,
+    output: Path | None,
+    inlet: str | None,
+    units: str,
+    templates: Path | None,
+    on: datetime | None,
+) -> None:
+    """Write job card and commissioning sheet of the change of a CASE to one REFRIGERANT as one HTML file."""
+    from retrofit.case.exchangers import INLET
+    from retrofit.refrigerants import find
+    from retrofit.report import render_site_copy, write_report
+
+    name = find(refrigerant).designation
+    T_inlet_K = None if inlet is None else INLET.read(inlet)
+    html = render_site_copy(
+        compared(case_file, on),
+        name,
+        units,
+        templates,
+        made_at=datetime.now().astimezone(),
+        T_inlet_today_K=T_inlet_K,
+    )
+    path = output or Path(f"{case_file.stem}-{name}.html")
+    write_report(path, html)
+    click.echo(f"Wrote {path}. Print it from a browser and take it to the plant.")
