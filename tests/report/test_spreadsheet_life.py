@@ -4,6 +4,7 @@ import io
 import math
 import zipfile
 from dataclasses import replace
+from functools import cache
 
 import pytest
 
@@ -104,7 +105,7 @@ def names_of(option):
 @pytest.fixture(scope="module")
 def book(lived, made_at):
     """Return a function that gives the spreadsheet of a case with its remaining life."""
-    return lambda name, units="si": opened(render_spreadsheet(lived(name), units, made_at=made_at))
+    return cache(lambda name, units="si": opened(render_spreadsheet(lived(name), units, made_at=made_at)))
 
 
 @pytest.mark.parametrize("units", [SI, IP], ids=["si", "ip"])

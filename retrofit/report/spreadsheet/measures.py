@@ -182,7 +182,7 @@ def _yearly() -> tuple[Measure, ...]:
 
     def no_cost(option: Prospect) -> str:
         found = option.account.yearly_cost
-        return "; ".join(dict.fromkeys(found.missing.values())) if found else NO_MONEY
+        return _for_want_of("; ".join(dict.fromkeys(found.missing.values()))) if found else NO_MONEY
 
     return (
         Measure("Yearly cost, parts known", "currency/year", cost, no_cost, "yearly_cost"),
@@ -205,7 +205,7 @@ def _climate(as_is: Prospect) -> tuple[Measure, ...]:
     edition, missing = as_is.account.tewi.gwp.edition, _missing("emissions")
     return (
         Measure("Remaining life", "years", _of_tewi("life_years"), missing),
-        Measure("Charge", "mass", lambda o: _base(o.account.plan.charge_kg), lambda o: o.account.plan.charge_missing),
+        Measure("Charge", "mass", lambda o: _base(o.account.plan.charge_kg), _charge_missing),
         Measure(f"GWP counted with, {edition}", "ratio", lambda o: o.account.tewi.gwp.value, _gwp_doubt),
         Measure("Leaks a year", "fraction", lambda o: _base(o.account.plan.leak.spread), _leak_missing),
         Measure(
@@ -225,8 +225,12 @@ def _gwp_doubt(option: Prospect) -> str:
     return option.account.tewi.gwp.doubt
 
 
+def _charge_missing(option: Prospect) -> str:
+    return _for_want_of(option.account.plan.charge_missing)
+
+
 def _leak_missing(option: Prospect) -> str:
-    return option.account.plan.leak.missing
+    return _for_want_of(option.account.plan.leak.missing)
 
 
 def _of_tewi(name: str) -> Read:
@@ -245,9 +249,14 @@ def _avoided(as_is: Prospect) -> Read:
 
 def _money(comparison: Comparison) -> tuple[Measure, ...]:
     appraised = (
-        ("Payback", "years", "payback_years", lambda o: missing_words(o, "cost") or payback_text(o)),
+        ("Payback", "years", "payback_years", lambda o: _missing("cost")(o) or payback_text(o)),
         ("Net present value", "currency", "npv", _no_npv(comparison)),
-        ("Cost of a tonne avoided", "currency/t CO2e", "cost_per_t", lambda o: per_tonne_text(comparison, o)),
+        (
+            "Cost of a tonne avoided",
+            "currency/t CO2e",
+            "cost_per_t",
+            lambda o: per_tonne_text(comparison, o).removeprefix("unknown: "),
+        ),
     )
     return (
         Measure("First cost", "currency", lambda o: _first(o, 1), _no_first, "first_cost"),
@@ -269,7 +278,7 @@ def _first(option: Prospect, place: int) -> float | None:
 
 def _no_first(option: Prospect) -> str:
     found = option.account.first_cost
-    return found.missing if found else NO_MONEY
+    return _for_want_of(found.missing) if found else NO_MONEY
 
 
 def _appraised(name: str) -> Read:
@@ -329,7 +338,18 @@ def reason(measure: Measure, option: Prospect) -> str:
 
 
 def _missing(quantity: str) -> Why:
-    return lambda option: missing_words(option, quantity)
+    if quantity == "energy":
+        return lambda option: missing_words(option, quantity)  # a sentence by itself
+    return lambda option: _for_want_of(missing_words(option, quantity))
+
+
+def _for_want_of(missing: str) -> str:
+    """Return what is missing as a reason; nothing if nothing is.
+
+    Args:
+        missing: What is missing, in words. [-]
+    """
+    return f"for want of {missing}" if missing else ""
 
 
 def _number(value: FloatArray | float | None) -> float | None:

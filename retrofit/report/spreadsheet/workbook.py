@@ -17,7 +17,7 @@ if TYPE_CHECKING:
 
 ADVICE = (
     "install XlsxWriter where retrofit is installed (in the project's folder: pip install '.[xlsx]'), or take the "
-    "numbers from `retrofit compare --csv`"
+    "numbers from `retrofit compare --csv` and `retrofit year --csv`"
 )
 LONGEST_TEXT = 32_000  # characters; the format allows 32 767 in a cell
 LONGEST_TITLE = 200
