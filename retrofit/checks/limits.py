@@ -16,6 +16,7 @@ LAW = "law, listings and permits at the place of the plant, now and over its rem
 LAW_ELSE = "permits and approvals, and law that the tables used do not hold: they are no legal advice"
 CONDITION = "age and condition of the plant, and what its makers allow"
 YEAR = "a year of operation: energy, emissions and cost"
+YEAR_ELSE = "wear, and losses of starting, over a year; prices, grid and leaks of later years beyond their limits"
 
 
 def not_checked(comparison: Comparison) -> tuple[str, ...]:
@@ -34,7 +35,7 @@ def not_checked(comparison: Comparison) -> tuple[str, ...]:
         CONDITION,
         ROOM_ELSE if room is not None and room.volume_m3 is not None else ROOM + ROOM_ELSE,
         LAW if comparison.law is None else LAW_ELSE,
-        YEAR,
+        YEAR if comparison.life is None or not comparison.life.years else YEAR_ELSE,
     )
 
 

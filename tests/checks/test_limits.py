@@ -7,6 +7,7 @@ import pytest
 from retrofit.case import read_case
 from retrofit.checks import assess, not_checked
 from retrofit.study import Component, compare
+from retrofit.study.life import with_life
 
 CASE = """
 [plant]
@@ -107,3 +108,13 @@ def test_law_and_room_are_named_until_the_case_says_where_the_plant_is(limits_of
     assert "law, listings" in without
     assert "room volume" not in given
     assert "law that the tables used do not hold" in given
+
+
+def test_a_year_that_was_computed_leaves_what_it_does_not_hold(limits_of):
+    """Until the remaining life is computed a year is not looked at; then what a year leaves out is still named."""
+    comparison, without = limits_of("", EXCHANGERS + '[year]\nbins = [["20 degC", 8760]]\n')
+    computed = "\n".join(not_checked(with_life(comparison, draws=0)))
+
+    assert "a year of operation" in without
+    assert "a year of operation" not in computed
+    assert "losses of starting" in computed
