@@ -156,6 +156,32 @@ def test_values_of_the_draws_are_those_of_the_json(name, book, lived):
     assert (endless > 0) is (name != "harbour-market")
 
 
+@pytest.mark.parametrize(
+    ("basis", "numbers"),
+    [
+        (
+            "same plant, at full",
+            {"Cooling": ("cooling_W", "cooling"), "Compressor power": ("power_W", "power"),
+             "Condensing pressure": ("p_cond_Pa", "pressure"),
+             "Discharge temperature": ("T_discharge_K", "temperature"), "Cooling, ratio to today": ("capacity_ratio", "ratio")},
+        ),
+        ("same plant, at today's cooling", {"COP": ("cop", "ratio"), "COP, ratio to today": ("cop_ratio", "ratio")}),
+    ],
+)  # fmt: skip
+def test_draws_at_the_design_point_stand_beside_its_base(basis, numbers, book, lived):
+    """What 10, 50 and 90 per cent of the draws stay below, for each refrigerant once."""
+    rows = [bare(row) for row in rows_of(book("harbour-market"), "Results") if row["Basis"] == basis]
+    drawn = {(row["Refrigerant"], row["Value"]): row for row in rows if row["Value"] in VALUES}
+    told = [o for o in year_json(lived("harbour-market"))["options"] if o["deed"] != "kept, with its repairs"]
+
+    assert len(rows) == len(told) * (1 + len(VALUES))
+    for option in told:
+        for value, key in VALUES.items():
+            for heading, (name, kind) in numbers.items():
+                there = option["certainty"]["quantiles"][name][key]
+                assert drawn[names_of(option)[0], value][heading] == pytest.approx(shown(there, kind, SI), rel=1e-9)
+
+
 def test_a_payback_that_never_comes_is_empty_and_said(book, lived):
     """In the freezer store a year with R-452A costs more than with the plant as it is."""
     row = life_rows(book("freezer-store"))["R-452A", "converted", "remaining life", "base"]

@@ -6,11 +6,12 @@ import math
 from collections.abc import Iterator
 from dataclasses import dataclass
 
-from retrofit.checks.prospects import Prospect, is_alike, prospects, quantile
+from retrofit.checks.prospects import KEPT, Prospect, is_alike, prospects, quantile
 from retrofit.report.judging import spelled
 from retrofit.report.spreadsheet.measures import (
     A_YEAR,
     NEVER,
+    REMAINING_LIFE,
     Measure,
     column_of,
     is_itself,
@@ -19,7 +20,7 @@ from retrofit.report.spreadsheet.measures import (
     reason,
     scale_of,
 )
-from retrofit.report.spreadsheet.table import Column, Content
+from retrofit.report.spreadsheet.table import Column, Content, in_units
 from retrofit.study import Comparison, Entry
 from retrofit.study.money import payback_words
 from retrofit.units import UnitSystem, listed
@@ -29,8 +30,24 @@ DRAWN = {0: "10 % of draws below", 1: "50 % of draws below", 2: "90 % of draws b
 ALIKE, NOT_COUNTED, IN_WORDS = "No meaningful difference in", "Not counted", "Payback in words"
 OF_BASE = "only the base value is kept"
 # By basis: what an option may show no meaningful difference from the plant as it is in.
-COMPARED = {A_YEAR: {"energy": "electricity", "saving": "yearly saving"}}
-COMPARED_OVER_LIFE = {"emissions": "warming", "cost": "cost over the remaining life"}
+COMPARED = {
+    A_YEAR: {"energy": "electricity", "saving": "yearly saving"},
+    REMAINING_LIFE: {"emissions": "warming", "cost": "cost over the remaining life"},
+}
+# By basis of the design point: heading in the sheet, name among the results of the draws, and kind. The draws hold the
+# existing plant, or without its exchangers its compressor at today's temperatures.
+AT_FULL = {
+    "Cooling": ("cooling_W", "cooling"),
+    "Compressor power": ("power_W", "power"),
+    "Condensing pressure": ("p_cond_Pa", "pressure"),
+    "Discharge temperature": ("T_discharge_K", "temperature"),
+    "Cooling, ratio to today": ("capacity_ratio", "ratio"),
+}
+OF_PLANT = {
+    "same plant, at full": AT_FULL,
+    "same plant, at today's cooling": {"COP": ("cop", "ratio"), "COP, ratio to today": ("cop_ratio", "ratio")},
+}
+OF_COMPRESSOR = {"same compressor": AT_FULL | {"COP": ("cop", "ratio")}}
 
 
 @dataclass(frozen=True)
@@ -60,12 +77,15 @@ def option_columns(comparison: Comparison, units: UnitSystem) -> tuple[Column, .
 
 
 def option_rows(comparison: Comparison, units: UnitSystem) -> Iterator[OptionRow]:
-    """Yield the rows of every option, basis by basis: the base values, then those of the draws.
+    """Yield the draws at the design point, then the rows of every option by basis: base values and those of the draws.
 
     Args:
         comparison: An assessed result.
         units: The reader's units.
     """
+    for option in prospects(comparison) if comparison.life else ():
+        if option.certainty is not None and option.deed != KEPT:  # at the design point the plant as it is
+            yield from _design_rows(comparison, units, option)
     for basis, numbers in measures(comparison).items():
         options = prospects(comparison)
         for option in options:
@@ -73,6 +93,18 @@ def option_rows(comparison: Comparison, units: UnitSystem) -> Iterator[OptionRow
             if option.certainty is not None:
                 for place in DRAWN:
                     yield _drawn_row(comparison, units, basis, numbers, option, place)
+
+
+def _design_rows(comparison: Comparison, units: UnitSystem, option: Prospect) -> Iterator[OptionRow]:
+    entry = option.entry
+    there = OF_PLANT if entry.plant else OF_COMPRESSOR if entry.compressor else {}
+    for basis, numbers in there.items():
+        for place, value in DRAWN.items():
+            row = _named(option, basis, value)
+            for heading, (name, kind) in numbers.items():
+                found = quantile(option, name)
+                row[heading] = in_units(kind, found[place], units) if found else None
+            yield OptionRow(entry, row, [f"all other numbers: {OF_BASE}"])
 
 
 def _base_row(
@@ -124,8 +156,7 @@ def _words(basis: str, as_is: Prospect, option: Prospect) -> dict[str, Content]:
     """Return what is to be said beside the numbers: what the model cannot tell apart, and what is not counted."""
     if option is as_is:
         return {}
-    compared = COMPARED.get(basis, COMPARED_OVER_LIFE)
-    alike = [text for quantity, text in compared.items() if is_alike(as_is, option, quantity)]
+    alike = [text for quantity, text in COMPARED[basis].items() if is_alike(as_is, option, quantity)]
     words: dict[str, Content] = {
         ALIKE: listed(alike, "and") if alike else None,
         NOT_COUNTED: _not_counted(basis, option),

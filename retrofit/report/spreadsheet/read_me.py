@@ -25,7 +25,7 @@ from retrofit.units import UnitSystem
 COLUMNS = (Column("Topic", width=14), Column("About", width=34), Column("Text", width=100), Column("Source", width=30))
 HELD = {
     "Inputs": "Every key of the case: given, assumed with its reason, or left out.",
-    "Results": "One row for each refrigerant and basis; of a year and the remaining life for each option and value.",
+    "Results": "One row for each refrigerant, basis and value; of a year and the remaining life for each option.",
     "Points": "One row for each refrigerant and state point of its cycle.",
     "Year": "Months, then outdoor temperatures, of every option: the same year sorted twice, so add up one of them.",
     "Sources": "Every catalogue value, caution and threshold behind the results, with where it comes from.",
