@@ -17,8 +17,8 @@ if TYPE_CHECKING:
     from werkzeug.serving import BaseWSGIServer
 
 ADDRESS = "127.0.0.1"
-MOST_AT_ONCE = 24  # requests being answered; further ones wait in the queue of the system
-IDLE_S = 20.0  # a connection that says nothing is closed
+MOST_AT_ONCE = 64  # requests being answered; further ones wait in the queue of the system
+IDLE_S = 5.0  # a connection that says nothing is closed
 
 
 def make_server(session: Session, port: int = 0) -> BaseWSGIServer:

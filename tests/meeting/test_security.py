@@ -147,6 +147,9 @@ def test_strange_fields_end_in_words(client):
     for text in ("9" * 400 + " degC", "\x00", "\u202e45 degC", "1e999 degC", "nan", "[[[[", "{a = 1}", '"""', "-" * 90):
         assert client.post("set", **{"in.duty.condensing": text}).status_code == 303
         assert client.get().status_code == 200
+    for text in ("[" * 60 + "]" * 60, "[1, 2, 3, 4]", "[nan, inf, 1]", "[0.1, 0.2, 1e308]", "{a = {a = 1}}", "../../x"):
+        assert client.post("set", **{"in.money.tariff": text}).status_code == 303
+        assert client.get().status_code == 200
     assert client.state.changes == ()
 
 
