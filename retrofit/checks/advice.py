@@ -15,7 +15,7 @@ from retrofit.case import Report
 from retrofit.checks.gates import cooling_reached
 from retrofit.study import Comparison, Entry, Finding
 from retrofit.study.bands import model_band, pair_band
-from retrofit.units import UnitSystem, listed
+from retrofit.units import UnitSystem, listed, told
 
 GRAVE = ("danger", "warning", "unknown")  # levels of cautions that page one names
 UNKNOWN_FAILS = "A component that is not known for lack of data turns out not to do"
@@ -139,7 +139,7 @@ def advice(comparison: Comparison, units: UnitSystem) -> Advice:
         fallback,
         () if recommended else tuple(_weighed(comparison, entry, units) for entry in open_),
         stops,
-        tuple(_risks(looked_at)),
+        tuple(_risks(looked_at, units)),
         tuple(_deadlines(comparison, report, looked_at)),
         tuple(_asked(comparison, report, recommended, looked_at)),
     )
@@ -279,11 +279,11 @@ def _to_settle(entry: Entry) -> Iterator[str]:
 # What could go wrong
 
 
-def _risks(entries: Sequence[Entry]) -> Iterator[Risk]:
+def _risks(entries: Sequence[Entry], units: UnitSystem) -> Iterator[Risk]:
     """Yield the grave cautions and what the findings warn of, each once with the refrigerants it is true of."""
     cautions = ((caution.title, entry) for entry in entries for caution in entry.cautions if caution.level in GRAVE)
     findings = (
-        (f"{finding.title}: {brief(finding.fact)}" if finding.level == "stop" else finding.title, entry)
+        (f"{finding.title}: {told(brief(finding.fact), units)}" if finding.level == "stop" else finding.title, entry)
         for entry in entries
         for finding in (*_at(entry, "stop"), *_at(entry, "unknown"), *_work(entry))
     )

@@ -1,7 +1,7 @@
 """The gates: each looks at one refrigerant of a result and says what it found, with threshold and source.
 
-Numbers in the texts carry both the value and the limit; temperatures in degC and pressures in bar, as the
-sources give them. No gate changes a number, and none says that a thing may be done.
+Numbers in the texts carry both the value and the limit, and are told in the reader's units; a source keeps the
+units it was published in. No gate changes a number, and none says that a thing may be done.
 """
 
 from __future__ import annotations
@@ -22,7 +22,7 @@ from retrofit.checks.room.change import asked_text
 from retrofit.refrigerants import parse_safety_class
 from retrofit.study import Comparison, Entry, Finding, Performance
 from retrofit.study.bands import pair_band
-from retrofit.units import listed
+from retrofit.units import listed, quantity
 
 # The catalogue's short names of oil families, and the words of the case file.
 OIL_FAMILIES = {
@@ -112,7 +112,8 @@ def capacity(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
         "capacity",
         level,
         f"Less cooling than needed {machine}",
-        f"{reached / 1e3:.4g} kW, {share:.0%} of the {needed / 1e3:.4g} kW needed.{doubt}",
+        f"{quantity('cooling', reached, '.4g')}, {share:.0%} of the {quantity('cooling', needed, '.4g')} "
+        f"needed.{doubt}",
         "Reduce the load, add displacement or choose another refrigerant.",
         limit.source,
     )
@@ -127,7 +128,7 @@ def compressor_data(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
         "compressor-data",
         "note",
         "Outside the data of the compressor",
-        f"pressure ratio {point.pressure_ratio:.1f}, evaporating at {point.p_evap_Pa / 1e5:.2f} bar a.",
+        f"pressure ratio {point.pressure_ratio:.1f}, evaporating at {quantity('pressure', point.p_evap_Pa, '.2f')}.",
         "The efficiencies there are carried on from the nearest data; ask the maker for data with this refrigerant.",
         "range of the points or of the polynomial in the case",
     )
@@ -146,8 +147,9 @@ def _today_against_duty(comparison: Comparison, today: Performance[float]) -> It
         "inputs-disagree",
         level,
         "Displacement and duty of the case do not quite agree",
-        f"with the displacement and efficiencies given, today's compressor reaches {today.cooling_W / 1e3:.4g} kW, "
-        f"{share:.0%} of the duty of {duty / 1e3:.4g} kW.",
+        "with the displacement and efficiencies given, today's compressor reaches "
+        f"{quantity('cooling', today.cooling_W, '.4g')}, {share:.0%} of the duty of "
+        f"{quantity('cooling', duty, '.4g')}.",
         f"Candidates are measured against {measured}; check swept volume, speed and volumetric efficiency.",
         (short if share < 1.0 else ample).source,
     )
@@ -159,13 +161,13 @@ def glide(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
         return
     found, feed = entry.duty.glide_evap_K, comparison.case.plant.evaporator
     flooded, high = limit_of(comparison, "glide_flooded"), limit_of(comparison, "glide")
-    level = flooded.level(found)
+    level, shown = flooded.level(found), quantity("temperature difference", found, ".1f")
     if level is not None and feed in ("flooded", "pumped"):
         yield Finding(
             "glide",
             level,
             f"Glide in a {feed} evaporator",
-            f"{found:.1f} K of glide in the evaporator, against {flooded.stop:.0f} K.",
+            f"{shown} of glide in the evaporator, against {flooded.figure_of('stop')}.",
             "The liquid pool takes another composition than what circulates.",
             flooded.source,
         )
@@ -174,7 +176,7 @@ def glide(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             "glide",
             "unknown",
             "Glide, and the evaporator's feed is not stated",
-            f"{found:.1f} K of glide in the evaporator.",
+            f"{shown} of glide in the evaporator.",
             "In a flooded or pumped evaporator that rules a refrigerant out. Give `evaporator` in [plant].",
             flooded.source,
         )
@@ -183,7 +185,7 @@ def glide(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             "glide",
             mild,
             "Glide in the evaporator",
-            f"{found:.1f} K between expansion valve and dew point.",
+            f"{shown} between expansion valve and dew point.",
             "Superheat is counted from the dew point, subcooling from the bubble point; set points and valve settings "
             "move.",
             high.source,

@@ -10,7 +10,7 @@ from collections.abc import Iterator
 from retrofit.checks.corners import Corner, worst
 from retrofit.checks.thresholds import Threshold, thresholds_for
 from retrofit.study import Comparison, Entry, Finding
-from retrofit.units import ZERO_C_K
+from retrofit.units import quantity
 
 
 def limit_of(comparison: Comparison, name: str) -> Threshold:
@@ -29,14 +29,13 @@ def discharge_temperature(comparison: Comparison, entry: Entry) -> Iterator[Find
     if entry.duty is None:
         return
     limit, corner = limit_of(comparison, discharge_limit(comparison)), worst(entry, "T_discharge_K")
-    found = corner.value - ZERO_C_K
-    level = limit.level(found)
+    level, found = limit.level_of(corner.value), quantity("temperature", corner.value, ".0f")
     if level is not None:
         yield Finding(
             "discharge-temperature",
             level,
             "Hot discharge",
-            f"{found:.0f} °C at the compressor outlet{corner.where}, against {limit.figures_in('°C')}.",
+            f"{found} at the compressor outlet{corner.where}, against {limit.figures_in()}.",
             "Ask the maker; lower return-gas temperature, head cooling or liquid injection are the usual ways.",
             limit.source,
         )
@@ -45,8 +44,8 @@ def discharge_temperature(comparison: Comparison, entry: Entry) -> Iterator[Find
             "model-range",
             "note",
             "Discharge beyond the range of the equation of state",
-            f"{found:.0f} °C is above {entry.T_limit_K - ZERO_C_K:.0f} °C, up to where the equation of state of every "
-            "component is stated to hold.",
+            f"{found} is above {quantity('temperature', entry.T_limit_K, '.0f')}, up to where the equation of state of "
+            "every component is stated to hold.",
             "The discharge temperature is an extrapolation.",
             "limits in the property library",
         )
@@ -63,7 +62,7 @@ def pressure_ratio(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             "pressure-ratio",
             level,
             "High pressure ratio",
-            f"{corner.value:.1f} (absolute){corner.where}, against {limit.figures_in('')}.",
+            f"{corner.value:.1f} (absolute){corner.where}, against {limit.figures_in()}.",
             "Ask the maker for the envelope with this refrigerant.",
             limit.source,
         )
@@ -79,8 +78,8 @@ def high_side(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             "high-side",
             "unknown",
             "Nameplate pressure not given",
-            f"Condensing at {entry.duty.p_cond_Pa / 1e5:.1f} bar a cannot be compared with what the high side is built "
-            "for.",
+            f"Condensing at {quantity('pressure', entry.duty.p_cond_Pa, '.1f')} cannot be compared with what the high "
+            "side is built for.",
             "Give `high_side_limit` in [plant].",
             limit.source,
         )
@@ -95,9 +94,9 @@ def high_side(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             "high-side",
             level,
             "Condensing pressure close to or above the nameplate",
-            f"{gauge / 1e5:.1f} bar g{corner.where or ' at the condensing temperature of the case'}, "
-            f"{gauge / name_plate:.0%} of the nameplate's {name_plate / 1e5:.1f} bar g, against "
-            f"{limit.figures_in('of it')}.",
+            f"{quantity('gauge pressure', gauge, '.1f')}"
+            f"{corner.where or ' at the condensing temperature of the case'}, {gauge / name_plate:.0%} of the "
+            f"nameplate's {quantity('gauge pressure', name_plate, '.1f')}, against {limit.figures_in('of it')}.",
             "Check switch, relief valve and vessel, and the hottest day if it is not given.",
             limit.source,
         )
@@ -116,8 +115,8 @@ def near_critical(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             "near-critical",
             level,
             "Condensing near the critical temperature",
-            f"{distance:.0f} K below the critical temperature of {entry.lines.T_critical_K - ZERO_C_K:.0f} °C"
-            f"{corner.where}, against {limit.figures_in('K')}.",
+            f"{quantity('temperature difference', distance, '.0f')} below the critical temperature of "
+            f"{quantity('temperature', entry.lines.T_critical_K, '.0f')}{corner.where}, against {limit.figures_in()}.",
             "On a hotter day capacity and COP fall fast.",
             limit.source,
         )
@@ -134,8 +133,8 @@ def vacuum(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             "vacuum",
             "work",
             "Low side below atmospheric pressure",
-            f"Evaporating at {corner.value / 1e5:.2f} bar a{corner.where}; the air at the plant has "
-            f"{ambient / 1e5:.2f} bar a.",
+            f"Evaporating at {quantity('pressure', corner.value, '.2f')}{corner.where}; the air at the plant has "
+            f"{quantity('pressure', ambient, '.2f')}.",
             "Air and moisture are drawn in through any leak, and leaks cannot be found from outside.",
             "physics",
         )

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import tomllib
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cache
 from importlib.resources import files
 
@@ -12,7 +12,7 @@ from retrofit.case import Case
 from retrofit.case import Threshold as OwnThreshold
 from retrofit.case.source import parsed
 from retrofit.errors import CaseFileError, Problem
-from retrofit.units import close_to, listed, quoted
+from retrofit.units import SI, close_to, figure, listed, quantity, quoted, told, unit_word
 
 LEVELS = ("note", "work", "stop")
 
@@ -23,6 +23,7 @@ class Threshold:
 
     Attributes:
         unit: What the figures count.
+        kind: Kind of quantity of the figures, if they have a unit, which `unit` then begins with; empty if not.
         source, basis: Where they come from: "read", "practice", "memory", or "case" if the user set them.
         note, work, stop: Where a finding of that level begins; None if there is no such level.
     """
@@ -33,6 +34,7 @@ class Threshold:
     note: float | None = None
     work: float | None = None
     stop: float | None = None
+    kind: str = ""
 
     @property
     def figures(self) -> Mapping[str, float]:
@@ -40,14 +42,30 @@ class Threshold:
         found = {level: getattr(self, level) for level in LEVELS}
         return {level: figure for level, figure in found.items() if figure is not None}
 
-    def figures_in(self, unit: str) -> str:
+    def figures_in(self, words: str = "") -> str:
         """Return where work and a stop begin, such as "107 °C (work) and 121 °C (stop)".
 
         Args:
-            unit: The unit as a sentence writes it.
+            words: What follows a figure without unit, as a sentence writes it.
         """
-        parts = [f"{figure:g} {unit}".strip() + f" ({level})" for level, figure in self.figures.items()]
+        parts = [f"{self.figure_of(level)} {words}".strip() + f" ({level})" for level in self.figures]
         return " and ".join(part for part in parts if not part.endswith("(note)"))
+
+    def figure_of(self, level: str) -> str:
+        """Return where a level begins, with its unit if it has one, for a sentence."""
+        begin = self.figures[level]
+        return quantity(self.kind, self._SI(begin), "g") if self.kind else f"{begin:g}"
+
+    def number(self, value: float) -> float:
+        """Return a value in the unit of the figures. [SI]"""
+        return float(SI.number(self.kind, value))
+
+    def level_of(self, value: float) -> str | None:
+        """Return the level of a value in SI that is worse the larger it is. [SI]"""
+        return self.level(self.number(value))
+
+    def _SI(self, figure: float) -> float:
+        return float(SI.displays[self.kind].unit.to_SI(figure))
 
     def words(self, side: str = "above") -> str:
         """Return the threshold in words, such as "work above 0.9, stop above 1 of the nameplate pressure".
@@ -55,7 +73,11 @@ class Threshold:
         Args:
             side: "above" or "below", the side on which a value is bad.
         """
-        return f"{', '.join(f'{level} {side} {figure:g}' for level, figure in self.figures.items())} {self.unit}"
+        if not self.kind:
+            return f"{', '.join(f'{level} {side} {begin:g}' for level, begin in self.figures.items())} {self.unit}"
+        unit, *rest = self.unit.split(" ", 1)
+        begins = (f"{level} {side} {figure(self.kind, self._SI(begin), 'g')}" for level, begin in self.figures.items())
+        return " ".join([", ".join(begins), unit_word(self.kind, unit), *rest])
 
     def level(self, value: float) -> str | None:
         """Return the level of a value that is worse the larger it is, None if it is below every level."""
@@ -115,7 +137,8 @@ def _problems(name: str, own: OwnThreshold, table: Mapping[str, Threshold]) -> I
         yield name, f"it has no level {listed(unknown)}; its levels are {listed(known, 'and')}"
         return
     if not _in_order(known, {**known, **given}):
-        yield name, f"its figures run the other way than {table[name].words('beyond')}; give all levels in that order"
+        words = told(table[name].words("beyond"), SI)
+        yield name, f"its figures run the other way than {words}; give all levels in that order"
 
 
 def _given(own: OwnThreshold) -> Mapping[str, float]:
@@ -134,4 +157,4 @@ def _laid_over(limit: Threshold, own: OwnThreshold) -> Threshold:
     instead = ", ".join(f"{level} {limit.figures[level]:g}" for level in given)
     source = f"set in the case, instead of {instead} ({limit.source})"
     figures = {**limit.figures, **given}
-    return Threshold(limit.unit, source, "case", *(figures.get(level) for level in LEVELS))
+    return replace(limit, source=source, basis="case", **figures)  # type: ignore[arg-type]

@@ -33,7 +33,7 @@ from retrofit.report.guard import POLICY
 from retrofit.report.judging import judged
 from retrofit.report.plain import plain
 from retrofit.report.templates import built_in_folder, filled, render_cautions
-from retrofit.units import UNIT_SYSTEMS
+from retrofit.units import UNIT_SYSTEMS, told
 
 if TYPE_CHECKING:
     from flask import Flask, Request, Response
@@ -59,7 +59,7 @@ class Meeting:
         cautions, nonce = render_cautions(board), secrets.token_urlsafe(16)
         template = "meeting-board.html" if is_part else "meeting.html"
         html = filled(template, board=board, page=board, cautions=cautions, token=self.token, nonce=nonce)
-        return _html(html, page_policy(nonce, str(cautions)))
+        return _html(told(html, UNIT_SYSTEMS[moment.state.units]), page_policy(nonce, str(cautions)))
 
     def act(self, request: Request) -> None:
         """Do what a form asks for; what hinders it is shown on the page."""
@@ -83,8 +83,8 @@ class Meeting:
         moment = self.session.moment()
         units, view = UNIT_SYSTEMS[moment.state.units], in_sight(moment)
         if name.startswith(OPTION):
-            told = how_of_option(view, name, quantity, units, moment.state)
-            return self._aside("meeting-how.html", is_part, moment, how=told, chart="") if told else None
+            way = how_of_option(view, name, quantity, units, moment.state)
+            return self._aside("meeting-how.html", is_part, moment, how=way, chart="") if way else None
         found = how(view, tables(view, units), name, quantity, units, moment.state)
         if found is None:
             return None
@@ -106,7 +106,7 @@ class Meeting:
         nonce = secrets.token_urlsafe(16)
         frame = template if is_part else "meeting-aside.html"
         html = filled(frame, part=template, nonce=nonce, large=moment.state.is_large, **values)
-        return _html(html, page_policy(nonce))
+        return _html(told(html, UNIT_SYSTEMS[moment.state.units]), page_policy(nonce))
 
     def report(self) -> Response:
         """Return the report of the present state as it would be written."""

@@ -10,7 +10,7 @@ from retrofit.report.assumed import legend, marked
 from retrofit.report.judging import source_title, spelled
 from retrofit.report.table import MOST_COLUMNS, Cell, Group, Notes, Row, Table
 from retrofit.study import Comparison, Component, Entry
-from retrofit.units import MISSING, UnitSystem
+from retrofit.units import MISSING, UnitSystem, all_told
 
 NOT_JUDGED = "not judged"
 CARRIED = (
@@ -148,8 +148,8 @@ def _matrix(entries: Sequence[Entry], names: dict[str, str]) -> Matrix:
 
 
 def _block(comparison: Comparison, code: str, units: UnitSystem) -> Block:
-    today = _component(comparison.existing, code)
-    others = [(entry, item) for entry in comparison.candidates if (item := _component(entry, code))]
+    today = _component(comparison.existing, code, units)
+    others = [(entry, item) for entry in comparison.candidates if (item := _component(entry, code, units))]
     pairs = others or [(comparison.existing, today)] if today else others
     items = [item for _, item in pairs]
     columns = _columns(items, units)
@@ -170,8 +170,8 @@ def _block(comparison: Comparison, code: str, units: UnitSystem) -> Block:
     )
 
 
-def _component(entry: Entry, code: str) -> Component | None:
-    return next((item for item in entry.hardware if item.code == code), None)
+def _component(entry: Entry, code: str, units: UnitSystem) -> Component | None:
+    return next((all_told(item, units) for item in entry.hardware if item.code == code), None)
 
 
 def _columns(items: Sequence[Component], units: UnitSystem) -> dict[tuple[str, str], list[str]]:

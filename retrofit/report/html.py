@@ -29,11 +29,12 @@ def render_html(
     from retrofit.report.guard import check_page
     from retrofit.report.page import build_page
     from retrofit.report.templates import render_cautions, render_page
-    from retrofit.units import UNIT_SYSTEMS
+    from retrofit.units import UNIT_SYSTEMS, told
 
     page = build_page(comparison, UNIT_SYSTEMS[units], made_at)
     cautions = render_cautions(page)
-    html = with_block(render_page(page, cautions, template_folder), comparison, units, made_at)
+    html = told(render_page(page, cautions, template_folder), UNIT_SYSTEMS[units])
+    html = with_block(html, comparison, units, made_at)
     check_page(html, page, cautions)
     return html
 
@@ -62,12 +63,12 @@ def render_site_copy(
     from retrofit.report.guard import check_page
     from retrofit.report.site_copy import build_site_copy, candidate_named
     from retrofit.report.templates import render_cautions, render_page
-    from retrofit.units import UNIT_SYSTEMS
+    from retrofit.units import UNIT_SYSTEMS, told
 
     entry = candidate_named(comparison, refrigerant)
     page = build_site_copy(comparison, entry, UNIT_SYSTEMS[units], made_at, T_inlet_today_K)
     cautions = render_cautions(page)
-    html = render_page(page, cautions, template_folder)
+    html = told(render_page(page, cautions, template_folder), UNIT_SYSTEMS[units])
     check_page(html, page, cautions)
     return html
 

@@ -15,6 +15,7 @@ from retrofit.study import Baseline, Comparison, Component, Entry, Finding, Inst
 from retrofit.study.bands import bands_of
 from retrofit.study.compare import RATIOS
 from retrofit.study.law import LawCheck
+from retrofit.units import SI, all_told
 
 # Unit of the SI number of each kind of quantity that a component is measured by.
 UNITS = {
@@ -45,7 +46,7 @@ def comparison_json(comparison: Comparison) -> dict[str, Any]:
         comparison: An assessed result.
     """
     case = comparison.case
-    return {
+    found = {
         "schema": COMPARISON_SCHEMA,
         "title": case.title,
         "case_file": case.path,
@@ -62,6 +63,7 @@ def comparison_json(comparison: Comparison) -> dict[str, Any]:
         "baseline": _baseline(comparison.baseline),
         "law": _plain(asdict(comparison.law)) if comparison.law else None,
     }
+    return all_told(found, SI)
 
 
 def _baseline(found: Baseline | None) -> dict[str, Any] | None:

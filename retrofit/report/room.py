@@ -11,7 +11,7 @@ from retrofit.report.classes import ClassBlock, Step, class_blocks, steps
 from retrofit.report.gathering import basis_text, gathered, nameless, names
 from retrofit.study import Comparison, Entry
 from retrofit.study.room import UNKNOWN, RoomCheck, WorkedLimit
-from retrofit.units import UnitSystem, stacked
+from retrofit.units import UnitSystem, all_told, stacked
 
 NOT_GIVEN = "not given"
 ROLES = {
@@ -108,7 +108,7 @@ def room_part(comparison: Comparison, units: UnitSystem) -> RoomPart | None:
     """
     if not has_room(comparison):
         return None
-    checks = [(entry, entry.room) for entry in comparison.entries if entry.room is not None]
+    checks = [(entry, all_told(entry.room, units)) for entry in comparison.entries if entry.room is not None]
     return RoomPart(
         code_text(comparison.case),
         _facts(comparison.case, units),
@@ -154,7 +154,8 @@ def room_lines(comparison: Comparison, units: UnitSystem) -> tuple[RoomLine, ...
         comparison: An assessed result.
         units: The reader's units.
     """
-    return tuple(_line(entry, entry.room, units) for entry in comparison.entries if entry.room is not None)
+    checks = ((entry, entry.room) for entry in comparison.entries if entry.room is not None)
+    return tuple(_line(entry, all_told(check, units), units) for entry, check in checks)
 
 
 def mass_text(value: float | None, units: UnitSystem) -> str:

@@ -21,7 +21,7 @@ from retrofit.report.terminal_site import law_text, room_text
 from retrofit.report.text_table import Column, paragraph, text_table
 from retrofit.study import Comparison, Entry
 from retrofit.study.bands import model_band
-from retrofit.units import UnitSystem, listed, shown
+from retrofit.units import UnitSystem, listed, shown, told
 
 INDENT = " " * 9
 CONVENTIONS = {
@@ -47,7 +47,7 @@ def comparison_text(comparison: Comparison, units: UnitSystem, columns: int, str
         *cautions_text(comparison, columns, strong),
         baseline_text(comparison, units, columns, strong),
         *_tables(comparison, units, columns, strong),
-        _findings(comparison, columns, strong),
+        _findings(comparison, units, columns, strong),
         _small_print(comparison, units, columns, strong),
     ]
     return "\n\n".join(part for part in parts if part)
@@ -191,14 +191,14 @@ def _refrigerants(entries: Sequence[Entry], strong: Emphasis) -> str:
     return f"{heading}\n{table}" + (f"\n{MARK_MEANS}" if MARK in table else "")
 
 
-def _findings(comparison: Comparison, columns: int, strong: Emphasis) -> str:
+def _findings(comparison: Comparison, units: UnitSystem, columns: int, strong: Emphasis) -> str:
     """Return the findings, worst first, each with the refrigerants it was found in."""
     groups: dict[tuple[str, str, str, str], list[str]] = {}
     for entry in comparison.entries:
         for finding in entry.findings:
             key = (finding.level, finding.code, finding.title, finding.advice)
             fact = f"{entry.refrigerant.designation}: {finding.fact}" if finding.fact else entry.refrigerant.designation
-            groups.setdefault(key, []).append(fact)
+            groups.setdefault(key, []).append(told(fact, units))
     lines = [strong("What the checks found")]
     for (level, _, title, advice), facts in sorted(groups.items(), key=lambda item: LEVELS.index(item[0][0])):
         if not any(": " in fact for fact in facts):

@@ -10,7 +10,7 @@ from retrofit.report.plant import cooling_needed_text, has_plant, plant_reason, 
 from retrofit.report.text_table import GAP, Column, paragraph, text_table, width
 from retrofit.study import Comparison, Entry
 from retrofit.study.bands import pair_band
-from retrofit.units import UnitSystem, format_number
+from retrofit.units import UnitSystem, format_number, told
 
 Emphasis = Callable[[str], str]
 Words = tuple[str, tuple[str, ...]]  # heading of a column, and its cells
@@ -150,7 +150,7 @@ def baseline_text(comparison: Comparison, units: UnitSystem, columns: int, stron
         text = "; ".join(values)
         lines.append(paragraph(f"{text[:1].upper()}{text[1:]}.", columns))
     lines += [
-        paragraph(f"{item.level:<9}{item.title}. {item.text}", columns, indent=" " * 9, first="")
+        paragraph(f"{item.level:<9}{item.title}. {told(item.text, units)}", columns, indent=" " * 9, first="")
         for item in found.problems
     ]
     if found.missing:

@@ -9,7 +9,7 @@ from retrofit.properties import Fluid
 from retrofit.study.installed import efficiency_model
 from retrofit.study.ledger import Ledger
 from retrofit.study.result import Finding
-from retrofit.units import SI
+from retrofit.units import SI, quantity
 
 # Thresholds, common practice of the trade and ours: no single authority states them.
 DIFFERENT_K = 3.0  # what gauges, clamps and a steady plant can hold
@@ -62,7 +62,7 @@ def duty(book: Ledger, case: Case, existing: Fluid) -> None:
 def _not_the_duty(case: Case, what: str, side: str, expected_K: float, found_K: float) -> Finding:
     readings = case.readings
     at = f", read at {SI.with_unit('fraction', readings.load)} load" if readings and readings.load is not None else ""
-    expected, found = (SI.with_unit("temperature", T_K) for T_K in (expected_K, found_K))
+    expected, found = (quantity("temperature", T_K) for T_K in (expected_K, found_K))
     return Finding(
         f"reading-against-case-{what}",
         "work",
@@ -83,7 +83,7 @@ def written(book: Ledger, case: Case, existing: Fluid) -> None:
         limit = DIFFERENT_K if is_kelvin else DIFFERENT_EFFICIENCY * given
         if abs(found - given) <= limit:
             continue
-        shown = [SI.with_unit("temperature difference" if is_kelvin else "fraction", value) for value in (given, found)]
+        shown = [quantity("temperature difference" if is_kelvin else "fraction", value) for value in (given, found)]
         name = key.partition(".")[2].replace("_", " ")
         book.notes.append(
             Finding(

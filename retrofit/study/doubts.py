@@ -14,7 +14,7 @@ from retrofit.properties.fluid import DEW_SLACK_K
 from retrofit.study.derivation import heat_loss
 from retrofit.study.ledger import Ledger
 from retrofit.study.result import Finding
-from retrofit.units import SI, parse_quantity
+from retrofit.units import SI, parse_quantity, quantity
 
 # Thresholds, all common practice of the trade and ours: no single authority states them.
 DIFFERENT_HEAT = 0.10  # relative: what flow meters and small temperature differences can hold
@@ -33,11 +33,11 @@ PRACTICE = "common practice of the trade"
 
 
 def _degC(T_K: float) -> str:
-    return SI.with_unit("temperature", T_K)
+    return quantity("temperature", T_K)
 
 
-def _kelvin(difference_K: float) -> str:
-    return SI.with_unit("temperature difference", difference_K)
+def _kelvin(difference_K: float, spec: str = "") -> str:
+    return quantity("temperature difference", difference_K, spec)
 
 
 def _percent(share: float) -> str:
@@ -66,7 +66,7 @@ def pressures(book: Ledger, case: Case, existing: Fluid) -> None:
     found = book.values("liquid_pressure", "discharge_pressure")
     if found and found[0] > found[1] * (1.0 + ROUNDING):
         ambient = case.plant.ambient_pressure_Pa
-        liquid, discharge = (f"{SI.gauge_text(p, ambient)} bar g" for p in found)
+        liquid, discharge = (quantity("gauge pressure", p - ambient, ".2f") for p in found)
         fact = f"Liquid pressure {liquid} is above discharge pressure {discharge}; the condenser can only lower it."
         advice = "Compare both gauges on one connection; a liquid column below the condenser adds some tenths of a bar."
         title = "Liquid pressure above discharge pressure"
@@ -93,7 +93,8 @@ def superheats(book: Ledger, case: Case, existing: Fluid) -> None:
     if line is not None and not -DEW_SLACK_K <= line <= highest:
         fact = f"The suction gas would be warmed by {_kelvin(line)} between evaporator and compressor."
         advice = (
-            f"Plausible is 0 to {highest:g} K: put both thermometers on clean pipe, under insulation, and read again."
+            f"Plausible is 0 to {_kelvin(highest, 'g')}: put both thermometers on clean pipe, "
+            "under insulation, and read again."
         )
         title = "Suction line not plausible"
         codes = ("suction_temperature", "evaporator_outlet_temperature")
@@ -128,7 +129,7 @@ def _superheat(book: Ledger, code: str, where: str, reading: str, highest_K: flo
             book, "reading-superheat", "Negative superheat", fact, advice, SUPERHEAT_RULE, reading, "suction_pressure"
         )
     elif superheat > highest_K:
-        fact = f"The superheat {where} is {_kelvin(superheat)}, above {highest_K:g} K."
+        fact = f"The superheat {where} is {_kelvin(superheat)}, above {_kelvin(highest_K, 'g')}."
         advice = "Check the unit of the gauge, the thermometer, and which refrigerant is in the plant."
         title = "Superheat too high to be one"
         _strike(book, "reading-superheat", title, fact, advice, PRACTICE, reading, "suction_pressure")
@@ -167,7 +168,7 @@ def _subcooling(book: Ledger) -> None:
         )
         _strike(book, "reading-subcooling", "Negative subcooling", fact, advice, SUPERHEAT_RULE, *codes)
     elif subcooling > highest:
-        fact = f"The subcooling is {_kelvin(subcooling)}, above {highest:g} K."
+        fact = f"The subcooling is {_kelvin(subcooling)}, above {_kelvin(highest, 'g')}."
         advice = "Check gauge and thermometer, and where on the liquid line they sit."
         _strike(book, "reading-subcooling", "Subcooling too high to be one", fact, advice, PRACTICE, *codes)
     else:
@@ -244,8 +245,8 @@ def power(book: Ledger, case: Case, existing: Fluid) -> None:
     if abs(metered - by_current) <= DIFFERENT_POWER * metered:
         book.agree("power", "power_from_current")
         return
-    fact = f"Power reads {SI.with_unit('power', metered)}; current, voltage and power factor make "
-    fact += f"{SI.with_unit('power', by_current)}."
+    fact = f"Power reads {quantity('power', metered)}; current, voltage and power factor make "
+    fact += f"{quantity('power', by_current)}."
     advice = (
         "Measure the power factor instead of taking the nameplate's, on every phase, and the power at the same time."
     )
@@ -285,7 +286,7 @@ def balance(book: Ledger, case: Case, existing: Fluid) -> None:
         found = book.values(code, f"{code}_secondary")
         if found is None or abs(found[0] - found[1]) <= DIFFERENT_HEAT * max(abs(side) for side in found):
             continue
-        both = [SI.with_unit("cooling", side) for side in found]
+        both = [quantity("cooling", side) for side in found]
         fact = f"In the {way} the refrigerant makes {both[0]}, air, water or brine makes {both[1]}."
         advice = f"Measure flow and both temperatures at the {way} again; then power, swept volume and pressures."
         title = f"Two sides of the {way} disagree"

@@ -27,6 +27,7 @@ from retrofit.units.showing import (
     stacked,
 )
 from retrofit.units.table import KINDS, ZERO_C_K, Kind, Unit
+from retrofit.units.told import all_told, figure, quantity, told, unit_word
 from retrofit.units.words import close_to, described, listed, quoted, shown
 
 __all__ = [
@@ -45,14 +46,19 @@ __all__ = [
     "Pressure",
     "Unit",
     "UnitSystem",
+    "all_told",
     "close_to",
     "described",
+    "figure",
     "format_number",
     "listed",
     "parse_pressure",
     "parse_quantity",
+    "quantity",
     "quoted",
     "shown",
     "stacked",
     "standard_atmosphere_Pa",
+    "told",
+    "unit_word",
 ]

@@ -12,7 +12,7 @@ from retrofit.refrigerants import find
 from retrofit.report.machine import UNITS
 from retrofit.study import compare
 from retrofit.study.hardware.numbers import OldNew
-from retrofit.units import IP, SI
+from retrofit.units import IP, SI, told
 
 KELVIN = 273.15
 AIR_PA = 101_325.0
@@ -592,7 +592,7 @@ def test_a_threshold_of_the_case_goes_before_the_file(whole):
 
     assert row(whole, "discharge-temperature").verdict == "keep"
     assert found.verdict == "replace"
-    assert "stop above 50" in found.threshold
+    assert "stop above 50" in told(found.threshold, SI)
     assert found.source.startswith("set in the case, instead of work 107, stop 121")
     assert findings(comparison, "discharge-temperature") == ["stop"]
 

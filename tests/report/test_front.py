@@ -13,6 +13,7 @@ from retrofit.checks import assess
 from retrofit.report import render_html
 from retrofit.report.front import OUTSIDE
 from retrofit.study import compare
+from retrofit.units import SI, told
 
 CASES = Path(__file__).resolve().parents[2] / "cases"
 SVG = b'<svg xmlns="http://www.w3.org/2000/svg"><script>document.title = "ran"; alert(1)</script></svg>'
@@ -96,7 +97,7 @@ def test_what_a_check_stops_is_not_recommended_silently(case, name, assessed, pa
     stops = [finding for finding in entry.findings if finding.level == "stop"]
 
     assert "Stop A check stops it." in text
-    assert spelled(f"{stops[0].title}: {stops[0].fact}") in text
+    assert spelled(told(f"{stops[0].title}: {stops[0].fact}", SI)) in text
     assert "provided that" not in text
     assert ("more check" in text) == (len(stops) > 1)
 
@@ -118,7 +119,7 @@ def test_the_rejected_are_those_that_a_check_stops(shipped, assessed, page_of, r
     assert len(rows) == sum(bool(found) for found in stops)
     for row, found in zip(rows, filter(None, stops), strict=True):
         assert row[1].startswith(found[0].title)
-        assert spelled(found[0].fact)[1:] in row[2].replace("\N{NO-BREAK SPACE}", " ")
+        assert spelled(told(found[0].fact, SI))[1:] in row[2].replace("\N{NO-BREAK SPACE}", " ")
         assert row[3]
     assert page.tables["verdicts"][1][0].startswith("Keep ")
 

@@ -10,7 +10,7 @@ from retrofit.report import render_html
 from retrofit.report.hardware import hardware
 from retrofit.study import Component, Measure, compare
 from retrofit.study.hardware.numbers import OldNew, Setting
-from retrofit.units import IP, SI
+from retrofit.units import IP, SI, told
 
 BLANK, VERDICTS = "\N{NO-BREAK SPACE}", ("keep", "adjust", "replace", "unknown")
 
@@ -58,14 +58,14 @@ def test_reasons_thresholds_sources_and_questions_are_told(shipped, assessed, pa
         return " ".join(re.sub(r"(?<=[0-9])%", " %", re.sub(r"\bR(?=[0-9])", "R-", words.replace("`", ""))).split())
 
     result = assessed(shipped)
-    told = [(entry, item) for entry in result.candidates for item in entry.hardware]
-    told += [(result.existing, item) for item in result.existing.hardware if item.verdict != "keep"]
-    for entry, item in told:
-        for sentence in re.split(r"(?<=\.) (?=[A-Z`])", item.reason):
+    shown = [(entry, item) for entry in result.candidates for item in entry.hardware]
+    shown += [(result.existing, item) for item in result.existing.hardware if item.verdict != "keep"]
+    for entry, item in shown:
+        for sentence in re.split(r"(?<=\.) (?=[A-Z`])", told(item.reason, SI)):
             assert spelled(sentence.replace(entry.refrigerant.designation, "this refrigerant")) in text
     for entry in result.candidates:
         for item in entry.hardware:
-            assert spelled(item.threshold) in text
+            assert spelled(told(item.threshold, SI)) in text
             assert spelled(item.ask.replace(entry.refrigerant.designation, "this refrigerant")) in text
 
 

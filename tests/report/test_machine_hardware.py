@@ -8,6 +8,7 @@ import pytest
 from retrofit.checks import assess
 from retrofit.report.machine import comparison_json
 from retrofit.study import Performance, compare
+from retrofit.units import SI, told
 
 AIR = {"medium": "air", "arrangement": "crossflow"}
 TABLES = {
@@ -36,7 +37,7 @@ def test_each_component_is_the_one_of_the_result(comparison, read):
         assert len(written["hardware"]) == len(entry.hardware) > 0
         for item, row in zip(entry.hardware, written["hardware"], strict=True):
             for name in ("code", "name", "verdict", "reason", "threshold", "source", "ask"):
-                assert row[name] == getattr(item, name)
+                assert row[name] == told(getattr(item, name), SI)
             values = [(measure["old"], measure["new"]) for measure in row["measures"]]
             assert values == [(measure.old, measure.new) for measure in item.measures]
 

@@ -109,8 +109,8 @@ def test_verdicts_findings_and_reasons_are_told(shipped, units, page_of, read_pa
         heading = f"{entry.refrigerant.display_name}, class {entry.refrigerant.safety_class.text}: {entry.verdict}"
         assert heading in page.headings
         for finding in entry.findings:
-            assert spelled(finding.fact)[1:] in text
-            assert spelled(finding.advice) in text
+            assert spelled(told(finding.fact, UNIT_SYSTEMS[units]))[1:] in text
+            assert spelled(told(finding.advice, UNIT_SYSTEMS[units])) in text
             assert finding.source in text or finding.source in KEYS
         assert entry.reason is None or text.count(spelled(entry.reason)) >= 2
 

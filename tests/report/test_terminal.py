@@ -8,7 +8,7 @@ import pytest
 from retrofit.checks import assess
 from retrofit.report.terminal import comparison_text
 from retrofit.study import compare
-from retrofit.units import IP, SI
+from retrofit.units import IP, SI, told
 
 NAMES = ["R448A", "R454C", "R744", "R1123"]
 RULE = "───"
@@ -169,7 +169,7 @@ def test_findings_come_worst_first_with_every_refrigerant_they_hold_for(comparis
         for finding in entry.findings:
             assert " ".join(finding.title.split()) in flat
             if finding.fact:
-                assert f"{entry.refrigerant.designation}: {' '.join(finding.fact.split())}" in flat
+                assert f"{entry.refrigerant.designation}: {' '.join(told(finding.fact, SI).split())}" in flat
 
 
 def test_small_print_has_assumptions_accuracy_versions_and_what_is_not_checked(case_of, comparison):

@@ -8,6 +8,7 @@ from retrofit.case import GasLine, LiquidLine
 from retrofit.checks.hardware.rows import Bound, Matter, View, judged, stated
 from retrofit.study import Component, Measure
 from retrofit.study.hardware.numbers import GasFlow, LiquidFlow, Throttling
+from retrofit.units import quantity
 
 VALVE_ASK = (
     "Maker's capacity with this refrigerant at this pressure difference; whether the charge of the power element "
@@ -118,9 +119,10 @@ def _gas_line(view: View, line: str) -> Iterator[Component]:
     if new is None or table is None:
         yield judged(Matter(f"{line}-line", name, "", measures, bounds, ask), [], [_no_line(line, table)])
         return
-    fact = f"{new.velocity_m_per_s:.1f} m/s"
+    fact = quantity("velocity", new.velocity_m_per_s, ".1f")
     if new.saturation_drop_K is not None and new.pressure_drop_Pa is not None:
-        fact += f" and a pressure drop of {new.pressure_drop_Pa:.0f} Pa, {new.saturation_drop_K:.2f} K"
+        fact += f" and a pressure drop of {quantity('line pressure drop', new.pressure_drop_Pa, '.0f')}, "
+        fact += quantity("temperature difference", new.saturation_drop_K, ".2f")
     levels = [bounds[0].level(new.velocity_m_per_s), bounds[1].level(new.velocity_m_per_s)]
     levels.append(bounds[2].level(new.saturation_drop_K))
     matter = Matter(f"{line}-line", name, f"{fact}.", measures, bounds, ask)
@@ -174,7 +176,7 @@ def _oil_return(view: View, line: str) -> Iterator[Component]:
     # What rounding alone makes smaller than today's is today's.
     share = round(new.lowest_momentum_flux_Pa / old.lowest_momentum_flux_Pa, 6)
     values = (new.lowest_velocity_m_per_s, new.flow_reversal, share)
-    fact = f"At the lowest load the gas moves at {new.lowest_velocity_m_per_s:.1f} m/s"
+    fact = f"At the lowest load the gas moves at {quantity('velocity', new.lowest_velocity_m_per_s, '.1f')}"
     if not is_level:
         fact += f", j* is {new.flow_reversal:.2f}, and density times velocity squared {share:.2f} of today's"
     levels = [bound.level(value) for bound, value in zip(bounds, values, strict=False)]
@@ -209,9 +211,9 @@ def liquid_line(view: View) -> Iterator[Component]:
     if new is None or table is None:
         yield judged(Matter("liquid-line", "Liquid line", "", measures, bounds, ask), [], [_no_line("liquid", table)])
         return
-    fact = f"{new.velocity_m_per_s:.2f} m/s"
+    fact = quantity("velocity", new.velocity_m_per_s, ".2f")
     if left.new is not None:
-        fact += f", and {left.new:.1f} K of subcooling left at the valve"
+        fact += f", and {quantity('temperature difference', left.new, '.1f')} of subcooling left at the valve"
     values = (new.velocity_m_per_s, new.saturation_drop_K, left.new)
     levels = [bound.level(value) for bound, value in zip(bounds, values, strict=True)]
     gaps = [_no_friction(view, "liquid", table, new.pressure_drop_Pa)]

@@ -9,7 +9,7 @@ from retrofit.checks.gates import cooling_reached
 from retrofit.checks.hardware.rows import Bound, Matter, View, judged, performance_measure, stated
 from retrofit.checks.operating import discharge_limit, motor_load
 from retrofit.study import Component, Measure
-from retrofit.units import ZERO_C_K
+from retrofit.units import quantity
 
 
 def discharge(view: View) -> Iterator[Component]:
@@ -20,11 +20,11 @@ def discharge(view: View) -> Iterator[Component]:
         performance_measure(view, "Discharge temperature, design point", "temperature", "T_discharge_K"),
         performance_measure(view, "Discharge temperature, hottest day", "temperature", "T_discharge_K", "hottest"),
     )
-    fact = f"The discharge reaches {corner.value - ZERO_C_K:.0f} °C{corner.where}."
+    fact = f"The discharge reaches {quantity('temperature', corner.value, '.0f')}{corner.where}."
     ask = "Highest discharge temperature that the maker allows with this refrigerant and oil; head cooling, injection."
     matter = Matter("discharge-temperature", "Compressor, discharge temperature", fact, measures, (bound,), ask)
     # The reading of the limit itself, so that today's refrigerant, too, is judged.
-    yield judged(matter, [bound.level(corner.value - ZERO_C_K)], [new.missing["hottest"]])
+    yield judged(matter, [bound.level_of(corner.value)], [new.missing["hottest"]])
 
 
 def ratio(view: View) -> Iterator[Component]:
@@ -105,7 +105,10 @@ def condenser(view: View) -> Iterator[Component]:
     )
     fact = f"It has to give off {ratio:.2f} times today's heat"
     rise = _rise(view, ratio)
-    fact += f"; without more surface or air condensing would rise by about {rise:.1f} K." if rise else "."
+    if rise:
+        fact += "; without more surface or air condensing would rise by about "
+        fact += quantity("temperature difference", rise, ".1f")
+    fact += "."
     ask = "Duty of the condenser at the hottest air; what it gives off today above that."
     yield judged(Matter("condenser", "Condenser", fact, measures, (bound,), ask), [view.level("condenser")])
 
@@ -125,7 +128,7 @@ def evaporator(view: View) -> Iterator[Component]:
     bound = Bound(view.limits["glide_flooded" if pool else "glide"])
     glide = view.numbers.new.design.glide_evap_K
     measures = (performance_measure(view, "Glide in the evaporator", "temperature difference", "glide_evap_K"),)
-    fact = f"{glide:.1f} K of glide in {f'a {feed}' if feed else 'an'} evaporator."
+    fact = f"{quantity('temperature difference', glide, '.1f')} of glide in {f'a {feed}' if feed else 'an'} evaporator."
     gaps = ["`evaporator` in [plant] is not given"] if feed is None else []
     matter = Matter("evaporator", "Evaporator, glide", fact, measures, (bound,))
     yield judged(matter, [view.level("glide")], gaps)

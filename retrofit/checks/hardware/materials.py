@@ -7,7 +7,7 @@ from collections.abc import Iterator
 from retrofit.checks.hardware.rows import Bound, Matter, View, judged, stated
 from retrofit.refrigerants import Refrigerant, find
 from retrofit.study import Component, Measure
-from retrofit.units import ZERO_C_K
+from retrofit.units import quantity
 
 CHLORINATED = ("CFC", "HCFC", "HCFO", "chloroalkene")
 AMMONIA, IODIDE = "R717", "R13I1"
@@ -55,7 +55,7 @@ def receiver(view: View) -> Iterator[Component]:
         return
     share = filling.receiver_share
     measures = (Measure("Fill with the whole charge", "fraction", share.old, share.new),)
-    fact = f"The whole charge fills {share.new:.0%} of it at {filling.T_receiver_K - ZERO_C_K:.0f} °C"
+    fact = f"The whole charge fills {share.new:.0%} of it at {quantity('temperature', filling.T_receiver_K, '.0f')}"
     level, today = bound.level(share.new), bound.level(share.old)
     if level == "stop" and today == "stop":
         # It does not hold today's charge either, so another refrigerant is no reason to change it.

@@ -8,10 +8,11 @@ from retrofit.checks.corners import worst
 from retrofit.checks.hardware.rows import Bound, Matter, View, judged, performance_measure, stated
 from retrofit.study import Component, Measure
 from retrofit.study.hardware.numbers import OldNew
+from retrofit.units import quantity
 
 
-def _bar(p_Pa: float) -> str:
-    return f"{p_Pa / 1e5:.1f} bar g"
+def _gauge(p_Pa: float) -> str:
+    return quantity("gauge pressure", p_Pa, ".1f")
 
 
 def _condensing(view: View) -> tuple[Measure, Measure]:
@@ -30,12 +31,12 @@ def high_side(view: View) -> Iterator[Component]:
     """Compare condensing with the nameplate of the high side."""
     plate = view.case.plant.high_side_limit_Pa
     missing = [view.numbers.new.missing["hottest"]]
-    fact = f"Condensing reaches {_bar(_highest(view))}."
+    fact = f"Condensing reaches {_gauge(_highest(view))}."
     if plate is None:
         missing.insert(0, "`high_side_limit` in [plant] is not given")
     else:
         share = _highest(view) / (plate - view.case.plant.ambient_pressure_Pa)
-        fact = f"Condensing reaches {_bar(_highest(view))}, {share:.0%} of the nameplate pressure."
+        fact = f"Condensing reaches {_gauge(_highest(view))}, {share:.0%} of the nameplate pressure."
     measures = (*_condensing(view), view.pressures("Nameplate of the high side", OldNew(plate, plate)))
     ask = "Written confirmation of the maximum pressure of each vessel and part of the high side."
     bound = Bound(view.limits["high_side"])
@@ -58,7 +59,7 @@ def switch(view: View) -> Iterator[Component]:
         yield judged(matter, [], ["`high_pressure_cut_out` in [controls] is not given"])
         return
     levels = [bounds[1].level(highest / setting)]
-    fact = f"Condensing reaches {_bar(highest)}, {highest / setting:.0%} of the cut-out at {_bar(setting)}"
+    fact = f"Condensing reaches {_gauge(highest)}, {highest / setting:.0%} of the cut-out at {_gauge(setting)}"
     if plate is not None:
         levels.append(bounds[0].level(setting / plate))
         fact += f", which is {setting / plate:.0%} of the nameplate"
@@ -86,13 +87,15 @@ def relief(view: View) -> Iterator[Component]:
         yield judged(matter, [], ["`relief_setting` in [plant] is not given"])
         return
     levels = [bounds[0].level(setting / operating), bounds[1].level(operating / setting)]
-    fact = f"It opens at {_bar(setting)}, {setting / operating:.2f} times the {_bar(operating)} reached in operation"
+    fact = (
+        f"It opens at {_gauge(setting)}, {setting / operating:.2f} times the {_gauge(operating)} reached in operation"
+    )
     if rest is not None:
         levels += ["stop" if rest > setting else bounds[1].level(rest / setting)]
-        fact += f"; at rest there are {_bar(rest)}"
+        fact += f"; at rest there are {_gauge(rest)}"
     if plate is not None and setting > plate * (1.0 + 1e-6):
         levels.append("stop")
-        fact += f"; it is set above the nameplate's {_bar(plate)}"
+        fact += f"; it is set above the nameplate's {_gauge(plate)}"
     gaps = [view.numbers.new.missing[name] for name in ("hottest", "standstill")]
     if plate is None:
         gaps.append("`high_side_limit` in [plant] is not given")
@@ -132,8 +135,8 @@ def standstill(view: View) -> Iterator[Component]:
     share = rest / min(plates) if rest is not None and plates else None
     fact = ""
     if rest is not None:
-        fact = f"At rest at the highest ambient temperature there are {_bar(rest)}"
-        fact += f", {share:.0%} of the lowest nameplate's {_bar(min(plates))}." if share is not None else "."
+        fact = f"At rest at the highest ambient temperature there are {_gauge(rest)}"
+        fact += f", {share:.0%} of the lowest nameplate's {_gauge(min(plates))}." if share is not None else "."
     ask = "Maximum pressure of the low side: evaporators, suction accumulators, crankcase."
     matter = Matter("standstill", "Low side at standstill", fact, measures, (bound,), ask)
     yield judged(matter, [bound.level(share)], gaps)
@@ -145,10 +148,11 @@ def vacuum(view: View) -> Iterator[Component]:
     cut_out = next((item.p_Pa.new for item in settings if item.key == "low_pressure_cut_out"), None)
     levels = [view.level("vacuum")]
     lowest = worst(view.entry, "p_evap_Pa", min).value
-    fact = f"Evaporating at {lowest / 1e5:.2f} bar a, the air at the plant has {air / 1e5:.2f} bar a"
+    reached, around = (quantity("pressure", p_Pa, ".2f") for p_Pa in (lowest, air))
+    fact = f"Evaporating at {reached}, the air at the plant has {around}"
     if cut_out is not None and cut_out < air:
         levels.append("work")
-        fact += f"; the low-pressure switch would cut out at {cut_out / 1e5:.2f} bar a"
+        fact += f"; the low-pressure switch would cut out at {quantity('pressure', cut_out, '.2f')}"
     measures = (
         performance_measure(view, "Evaporating pressure", "pressure", "p_evap_Pa"),
         Measure("Air pressure at the plant", "pressure", air, air),
@@ -168,7 +172,7 @@ def near_critical(view: View) -> Iterator[Component]:
         performance_measure(view, "Condensing temperature, design point", "temperature", "T_cond_mean_K"),
         Measure("Critical temperature", "temperature", old.T_critical_K, new.T_critical_K),
     )
-    fact = f"Condensing comes within {distance:.0f} K of the critical temperature."
+    fact = f"Condensing comes within {quantity('temperature difference', distance, '.0f')} of the critical temperature."
     matter = Matter("near-critical", "Condenser, critical point", fact, measures, (Bound(limit, "below"),))
     yield judged(matter, [view.level("near-critical")], [new.missing["hottest"]])
 

@@ -85,6 +85,10 @@ class Bound:
             return None
         return self.limit.level(value) if self.side == "above" else self.limit.level_below(value)
 
+    def level_of(self, value: float) -> str | None:
+        """Return the level of a value in SI, where the figures of the threshold are in another unit. [SI]"""
+        return self.level(self.limit.number(value))
+
 
 @dataclass(frozen=True)
 class Matter:

@@ -8,6 +8,7 @@ from retrofit.checks.hardware.rows import Bound, Matter, View, stated
 from retrofit.study import Component, Measure
 from retrofit.study.hardware.numbers import Setting
 from retrofit.study.hardware.settings import SET_POINTS
+from retrofit.units import quantity
 
 HELD = {
     "dew": "the same dew temperature",
@@ -41,8 +42,9 @@ def _row(view: View, item: Setting, step: int) -> Component:
     code = f"set-point-{item.key.replace('_', '-')}" + (f"-{step}" if step else "")
     if old is None or new is None:
         return stated(Matter(code, item.name, "", measures, (bound,)), "unknown", [item.reason], SOURCE)
-    fact = f"{old / 1e5:.2f} bar g becomes {new / 1e5:.2f} bar g at {HELD[item.held]}."
-    verdict = "adjust" if bound.level(abs(new - old) / 1e5) else "keep"
+    before, after = (quantity("gauge pressure", p_Pa, ".2f") for p_Pa in (old, new))
+    fact = f"{before} becomes {after} at {HELD[item.held]}."
+    verdict = "adjust" if bound.level_of(abs(new - old)) else "keep"
     return stated(Matter(code, item.name, fact, measures, (bound,), "Range of the control."), verdict, (), SOURCE)
 
 

@@ -14,7 +14,7 @@ from retrofit.checks.room.change import class_change
 from retrofit.checks.room.lfl import height_factor_m, is_heavy_enough, least_area_m2
 from retrofit.checks.room.lists import class_lists, questions
 from retrofit.checks.room.machinery import machinery_questions
-from retrofit.checks.room.working import mass
+from retrofit.checks.room.working import mass, mass_told
 from retrofit.refrigerants import Refrigerant
 from retrofit.study import Comparison, Entry
 from retrofit.study.charge import CircuitCharge, circuit_charge
@@ -66,7 +66,8 @@ def against_limit(limit: WorkedLimit, charge: CircuitCharge) -> tuple[str, tuple
     if highest <= limit.limit_kg:
         return BELOW, ()
     if lowest <= limit.limit_kg:
-        within = f"a charge that is known better: {mass(limit.limit_kg)} lies within {mass(lowest)} to {mass(highest)}"
+        here, *ends = map(mass_told, (limit.limit_kg, lowest, highest))
+        within = f"a charge that is known better: {here} lies within {' to '.join(ends)}"
         return UNKNOWN, (within,)
     if limit.open_because and (limit.open_up_to_kg is None or lowest <= limit.open_up_to_kg):
         return UNKNOWN, (limit.open_because,)

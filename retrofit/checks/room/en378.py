@@ -17,6 +17,7 @@ from retrofit.checks.room.working import (
     class_of,
     concentration,
     mass,
+    mass_told,
     room_volume,
 )
 from retrofit.refrigerants import Refrigerant
@@ -164,7 +165,7 @@ def _open_if_sealed(found: WorkedLimit, room: Room, least_kg: float) -> WorkedLi
     """Leave open whether a small charge is allowed, if it is not said whether the system is factory-sealed."""
     if found.limit_kg is None or room.sealed is not None or least_kg <= found.limit_kg or found.open_because:
         return found
-    why = f"`sealed` in [room] is not given, and a factory-sealed system may hold {mass(least_kg)} anywhere"
+    why = f"`sealed` in [room] is not given, and a factory-sealed system may hold {mass_told(least_kg)} anywhere"
     return replace(found, open_because=why, open_up_to_kg=least_kg)
 
 

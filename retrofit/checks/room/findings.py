@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
-from retrofit.checks.room.working import mass
+from retrofit.checks.room.working import mass_told
 from retrofit.refrigerants import parse_safety_class
 from retrofit.study import Comparison, Entry, Finding
 from retrofit.study.room import ABOVE, UNKNOWN, RoomCheck
@@ -54,8 +54,8 @@ def _charge(room: RoomCheck) -> str:
         return "charge not known"
     of = "" if room.charge_of == "largest circuit" else ", the whole plant"
     if room.lowest_kg == room.highest_kg:
-        return f"{mass(room.expected_kg)}{of}"
-    return f"{mass(room.expected_kg)} expected ({mass(room.lowest_kg)} to {mass(room.highest_kg)}){of}"
+        return f"{mass_told(room.expected_kg)}{of}"
+    return f"{mass_told(room.expected_kg)} expected ({mass_told(room.lowest_kg)} to {mass_told(room.highest_kg)}){of}"
 
 
 def _above(room: RoomCheck, is_existing: bool) -> Finding:
@@ -67,7 +67,7 @@ def _above(room: RoomCheck, is_existing: bool) -> Finding:
         "room-charge",
         "work" if is_existing else "stop",
         "Charge above what a room of this kind may take",
-        f"{_charge(room)}, against {mass(limit.limit_kg)} by {limit.title[0].lower()}{limit.title[1:]} "
+        f"{_charge(room)}, against {mass_told(limit.limit_kg)} by {limit.title[0].lower()}{limit.title[1:]} "
         f"({limit.code_family}), decided by {limit.decided_by}.",
         "Ask what the plant was approved under. " + DEFERS
         if is_existing

@@ -6,7 +6,7 @@ from dataclasses import dataclass, field
 
 from retrofit.refrigerants import Refrigerant, SafetyClass, Value, parse_safety_class
 from retrofit.study.room import WorkedLimit
-from retrofit.units import SI
+from retrofit.units import SI, quantity
 
 
 @dataclass(frozen=True)
@@ -113,6 +113,15 @@ def mass(value: float) -> str:
         value: The mass. [kg]
     """
     return f"{value:.4g} kg"
+
+
+def mass_told(value: float) -> str:
+    """Return a mass for a sentence, told in the reader's units; the working of a limit keeps those of its formula.
+
+    Args:
+        value: The mass. [kg]
+    """
+    return quantity("mass", value, ".4g")
 
 
 def concentration(value: float) -> str:
