@@ -7,6 +7,7 @@ import pytest
 from retrofit.checks import not_checked
 from retrofit.refrigerants import GWP_BASES
 from retrofit.report import render_html
+from retrofit.units import UNIT_SYSTEMS, told
 
 SYSTEMS = ["si", "ip"]
 KEYS = {"Practice"}  # of the bibliography; the report writes out the title
