@@ -88,7 +88,10 @@ def _token(shown: str, *hidden: str) -> str:
 
 def _told(found: re.Match[str], units: UnitSystem) -> str:
     hidden = "".join(chr(ord(c) - _SHIFT) for c in found[2]).split("|")
-    texts = dict.fromkeys(found[1] if system is SI else _in(system, *hidden) for system in units.systems)
+    try:
+        texts = dict.fromkeys(found[1] if system is SI else _in(system, *hidden) for system in units.systems)
+    except (KeyError, OverflowError, TypeError, ValueError):
+        return found[1]  # no token of ours: a user's text may hold these characters
     first, *second = texts
     return f"{first} ({second[0]})" if second else first
 

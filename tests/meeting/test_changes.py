@@ -254,6 +254,16 @@ def test_units_change_every_number_and_nothing_else(client):
     assert client.session.moment().outcome.comparison.entries == before.entries
 
 
+def test_sentences_are_in_the_units_of_the_meeting(client):
+    """Board, findings of one refrigerant and report: no mark of a quantity is left, and its unit is the one chosen."""
+    for units, unit in (("si", "kW needed"), ("ip", "ton needed"), ("both", "ton) needed")):
+        pages = [client.change(f"units {units}")]
+        pages += [client.get(path).get_data(as_text=True) for path in ("/why/R454C", "/why/R404A", "/report")]
+
+        assert not re.search("[\ue000-\uf8ff]", "".join(pages))
+        assert unit in pages[1].replace("\N{NO-BREAK SPACE}", " ")
+
+
 def test_an_unknown_act_is_told_in_words(client):
     """What no button asks for is refused without a fault."""
     for act in ("", "explode", "hide", "hide R11", "pin ../../etc/passwd", "nudge duty.cooling +9", "units furlongs"):

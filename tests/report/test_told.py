@@ -73,7 +73,12 @@ def test_figures_share_a_unit_and_records_are_told_whole():
     assert told(told(text, IP), SI) == "work below 27 °F"
     assert all_told({"a": [text, 1.5, None]}, IP) == {"a": ["work below 27 °F", 1.5, None]}
     assert told(text.upper().capitalize(), IP).endswith("27 °F")
-    assert told("\ue000 not a token", IP) == "\ue000 not a token"
+
+
+@pytest.mark.parametrize("text", ["\ue000 5", "\ue0005\ue001\ue002", "\ue0005\ue001\ue161\ue17c\ue162\ue002"])
+def test_characters_of_a_user_are_no_token(text):
+    """What looks like a token and is none keeps its text."""
+    assert told(text, IP).strip("\ue000 ") == told(text, BOTH).strip("\ue000 ") == "5"
 
 
 def _sentences(result):
