@@ -22,7 +22,7 @@ from retrofit.units import ZERO_C_K
 FloatArray = NDArray[np.float64]
 Efficiencies = Callable[[FloatArray, FloatArray], tuple[FloatArray, FloatArray]]
 
-RESIDUAL_TOLERANCE = 1e-9  # aimed at, relative; a condition counts as solved below 1e-6
+RESIDUAL_TOLERANCE = 1e-8  # aimed at, relative; a condition counts as solved below 1e-6
 SOLVED_BELOW = 1e-6
 MOST_STEPS = 40
 LONGEST_STEP_K = 10.0
@@ -297,8 +297,7 @@ def _settled(
 
     given = conditions
     found, active = T.copy(), np.arange(T.shape[1])
-    now = at(T)
-    slopes = _slopes(fluid, machine, given, T, now.lack)
+    now, slopes = at(T), None
     for _ in range(MOST_STEPS):
         is_open = np.any(_error(now) > RESIDUAL_TOLERANCE, axis=0)
         if not np.any(is_open):
@@ -306,9 +305,11 @@ def _settled(
         if is_open.size > FEW and np.mean(is_open) < STILL_OPEN:
             # The few that take longer, or have no solution, do not hold up the others.
             found[:, active] = T
-            active, T, slopes = active[is_open], T[:, is_open], slopes[:, :, is_open]
+            active, T = active[is_open], T[:, is_open]
             given = {name: array[is_open] for name, array in given.items()}
-            now = at(T)
+            now, slopes = at(T), None if slopes is None else slopes[:, :, is_open]
+        if slopes is None:
+            slopes = _slopes(fluid, machine, given, T, now.lack)
         T, now, slopes = _stepped(at, T, now, slopes, _newton_step(slopes, now.lack), limits)
     if active.size == found.shape[1]:
         return T, now

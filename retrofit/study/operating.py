@@ -16,6 +16,7 @@ from retrofit.study.result import FloatArray, Operation, Performance
 
 DELIVERED = {"cooling": "cooling_W", "heating": "heat_rejected_W"}
 Starts = tuple[ArrayLike, ArrayLike]
+LEAST_SHARE = 0.2  # of the differences at full, to begin a search with
 
 
 def delivered_W(found: Performance[FloatArray], serves: str) -> FloatArray:
@@ -82,14 +83,19 @@ def _slowed(
 ) -> Operation[FloatArray]:
     """Return the operation with the speed that just delivers the load where it is a part of what the machine can."""
     needed, swept = simple.cooling_needed_W, np.asarray(machine.swept_volume_m3_per_s)
-    just = balanced(balance(behaviour, machine, *starts_K, np.where(is_part, needed, np.nan), serves))
+    part = np.where(is_part, needed, np.nan)
+    just = balanced(
+        balance(behaviour, machine, *_less_loaded(machine, starts_K, simple.run_time_fraction), part, serves)
+    )
     # A load so small that no speed balances it is met by starting and stopping, as a machine of fixed speed does.
     is_part = is_part & ~np.isnan(just.power_W)
     speed, run_time, power = just.swept_volume_m3_per_s / swept, np.ones_like(needed), just.power_W
     lowest = compressor.lowest_speed or 0.0
     is_slow = is_part & (speed < lowest)
     if np.any(is_slow):
-        slow = balanced(balance(behaviour, replace(machine, swept_volume_m3_per_s=lowest * swept), *starts_K))
+        # Where the machine need not run that slow it is left at full, where the search begins and ends.
+        slowest = replace(machine, swept_volume_m3_per_s=np.where(is_slow, lowest * swept, swept))
+        slow = balanced(balance(behaviour, slowest, *starts_K))
         share = needed / delivered_W(slow, serves)
         speed, run_time = np.where(is_slow, lowest, speed), np.where(is_slow, share, run_time)
         power = np.where(is_slow, slow.power_W * share, power)
@@ -99,3 +105,12 @@ def _slowed(
         speed_fraction=np.where(is_part, speed, simple.speed_fraction),
         mean_power_W=np.where(is_part, power, simple.mean_power_W),
     )
+
+
+def _less_loaded(machine: Machine, starts_K: Starts, share: FloatArray) -> Starts:
+    """Return where to look for the balance at part load: the differences to the media go with the load."""
+    kept = np.clip(np.nan_to_num(share, nan=1.0), LEAST_SHARE, 1.0)
+    sides = (machine.evaporator, machine.condenser)
+    T_in = [np.asarray(side.secondary.T_in_K, dtype=float) for side in sides]
+    evaporating, condensing = (T + (np.asarray(start) - T) * kept for T, start in zip(T_in, starts_K, strict=True))
+    return evaporating, np.maximum(condensing, machine.T_cond_lowest_K)

@@ -27,6 +27,7 @@ DAY_H = 24.0
 UNMET_SHARE = 1e-3  # of the load: less is rounding of the plant's own numbers
 AIR_BIN_K = 2.0
 TOGETHER_K, TOGETHER_SHARE = 1.0, 0.05  # conditions of a year this close are alike
+A_FEW, FEWEST_FOR_A_FEW = 16, 200  # conditions solved first, and how many there have to be for it
 SINKS, SOURCES = 13, 5  # nodes of a map
 SHORTEST_AXIS_K = 20.0  # of a map: a year that hardly varies still shows what a hotter one would do
 EXISTING, SIZED, BY_MAKER = "existing plant", "new plant of today's size", "new plant by its maker's seasonal COP"
@@ -338,6 +339,7 @@ def run_year(ready: YearPlant, asked: YearConditions) -> YearRun:
     # Hours alike are solved once.
     alike, back = np.unique(np.stack(deciding), axis=1, return_inverse=True)
     machine, starts = ready.at(alike[0], alike[1])
+    starts = _from_a_few(ready, alike, starts)
     found = balance(ready.behaviour, machine, *starts)
     if not np.any(found.is_solved):
         raise NoSolutionError(f"{ready.behaviour.designation} in the plant as installed: {found.reason[0]}")
@@ -351,6 +353,26 @@ def run_year(ready: YearPlant, asked: YearConditions) -> YearRun:
         full = _spread(full, back)
         run = operating(ready.behaviour, machine, compressor, full, asked.load_W, starts, asked.serves)
     return _year_of(ready, asked, full, run, found.reason[back])
+
+
+def _from_a_few(
+    ready: YearPlant, alike: FloatArray, starts_K: tuple[FloatArray, FloatArray]
+) -> tuple[FloatArray, FloatArray]:
+    """Return where to begin the search for many conditions: from where a few of them, from cold to warm, settle."""
+    inlets = alike[:2]
+    if inlets.shape[1] < FEWEST_FOR_A_FEW:
+        return starts_K
+    few = np.argsort(inlets[1])[np.linspace(0, inlets.shape[1] - 1, A_FEW).astype(np.int64)]
+    machine, first = ready.at(inlets[0][few], inlets[1][few])
+    found = balance(ready.behaviour, machine, *first)
+    few, settled = few[found.is_solved], (found.cycle.T_evap_dew_K, found.cycle.T_cond_dew_K)
+    if few.size < 2:
+        return starts_K
+    evaporating, condensing = (
+        T_in + np.interp(inlets[1], inlets[1][few], T[found.is_solved] - T_in[few])
+        for T_in, T in zip(inlets, settled, strict=True)
+    )
+    return evaporating, condensing
 
 
 def _spread(found: Arrays, back: IntArray) -> Arrays:
