@@ -22,7 +22,7 @@ from retrofit.units import ZERO_C_K
 FloatArray = NDArray[np.float64]
 Efficiencies = Callable[[FloatArray, FloatArray], tuple[FloatArray, FloatArray]]
 
-RESIDUAL_TOLERANCE = 1e-8  # aimed at, relative; a condition counts as solved below 1e-6
+RESIDUAL_TOLERANCE = 1e-9  # aimed at, relative; a condition counts as solved below 1e-6
 SOLVED_BELOW = 1e-6
 MOST_STEPS = 40
 LONGEST_STEP_K = 10.0

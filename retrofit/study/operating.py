@@ -8,7 +8,7 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from retrofit.case import Compressor
-from retrofit.equipment.balance import Balance, Machine, balance
+from retrofit.equipment.balance import SOLVED_BELOW, Balance, Machine, balance
 from retrofit.equipment.compressor import operation
 from retrofit.properties import Fluid
 from retrofit.study.performance import performance
@@ -63,7 +63,9 @@ def operating(
     """
     kind, able = compressor.speed or "fixed", delivered_W(full, serves)
     needed = np.maximum(np.asarray(needed_W, dtype=float), 0.0)
-    share, unmet = np.minimum(needed / able, 1.0), np.maximum(needed - able, 0.0)
+    lacks = needed - able
+    # What a balance is not solved to is no lack of load.
+    share, unmet = np.minimum(needed / able, 1.0), np.where(lacks > SOLVED_BELOW * needed, lacks, 0.0 * lacks)
     is_part = (share < 1.0) & (needed > 0.0)
     run_time, speed = operation("fixed" if kind == "variable" else kind, compressor.steps or 1, 1.0, share)
     simple = Operation(kind, needed, unmet, run_time, speed, full.power_W * share)
