@@ -23,7 +23,6 @@ from retrofit.checks.prospects import (
     missing_words,
     probability,
     prospects,
-    quantile,
     ranked,
 )
 from retrofit.study import Comparison
@@ -590,18 +589,3 @@ def per_tonne_text(comparison: Comparison, option: Prospect) -> str:
     """
     appraisal = option.account.appraisal
     return UNKNOWN if appraisal is None else cost_per_tonne_words(appraisal, currency(comparison))
-
-
-def range_text(option: Prospect, name: str, to_number: Callable[[float], float]) -> str:
-    """Return the range in which 8 of 10 draws lie; empty if not known.
-
-    Args:
-        option: The option.
-        name: Name of the result. [-]
-        to_number: From its unit to that of the reader.
-    """
-    found = quantile(option, name)
-    if found is None:
-        return ""
-    low, high = (rounded_text(to_number(value)) if math.isfinite(value) else "never" for value in (found[0], found[2]))
-    return f"{low} to {high}"

@@ -227,19 +227,6 @@ def run_installed(plant: ExistingPlant, behaviour: Fluid, cycle: Cycle, T_hottes
     )
 
 
-def run_at_condenser_inlet(plant: ExistingPlant, behaviour: Fluid, T_in_K: float) -> Performance[float]:
-    """Return what the existing plant does at full with another temperature at the condenser's inlet.
-
-    Args:
-        plant: The plant as installed.
-        behaviour: The refrigerant.
-        T_in_K: Temperature of air, water or brine at the inlet of the condenser. [K]
-    Raises: NoSolutionError with the reason if the plant does not balance.
-    """
-    machine, starts = machine_at(plant, behaviour, np.asarray(plant.machine.evaporator.secondary.T_in_K), T_in_K)
-    return _solved(plant, behaviour, machine, starts)
-
-
 def machine_at(
     plant: ExistingPlant, behaviour: Fluid, T_evap_in_K: ArrayLike, T_cond_in_K: ArrayLike
 ) -> tuple[Machine, tuple[FloatArray, FloatArray]]:
@@ -289,13 +276,3 @@ def _operation(
         raise NoSolutionError(f"{behaviour.designation} in the plant as installed: no solution at part speed")
     numbers = {item.name: float(getattr(found, item.name)) for item in fields(Operation) if item.name != "control"}
     return Operation(control=found.control, **numbers)
-
-
-def _solved(
-    plant: ExistingPlant, behaviour: Fluid, machine: Machine, starts_K: tuple[FloatArray, FloatArray]
-) -> Performance[float]:
-    """Return what a machine does in one condition, or raise NoSolutionError with the reason."""
-    found = balance(behaviour, machine, *starts_K)
-    if not found.is_solved:
-        raise NoSolutionError(f"{behaviour.designation} in the plant as installed: {found.reason}")
-    return as_numbers(balanced(found))
