@@ -13,6 +13,7 @@ def share_of_limit(p_Pa: float, limit_Pa: float, air_Pa: float) -> float:
 
     Args:
         p_Pa, limit_Pa, air_Pa: The pressure, the limit and the air at the plant, absolute. [Pa]
+    Returns: The share; negative for a pressure below that of the air. [-]
     >>> share_of_limit(6e5, 11e5, 1e5)
     0.5
     >>> share_of_limit(6e5, 0.9e5, 1e5)
@@ -29,6 +30,7 @@ def times_below(share: float) -> float:
 
     Args:
         share: The pressure as part of the limit. [-]
+    Returns: The margin. [-]
     >>> times_below(0.5)
     2.0
     """
@@ -36,5 +38,7 @@ def times_below(share: float) -> float:
 
 
 def share_text(share: float) -> str:
-    """Return a share of a limit as a sentence writes it, such as "87%"."""
-    return f"{share:.0%}" if math.isfinite(share) else "more than all"
+    """Return a share of a limit as a sentence writes it, such as "87%"; there is none of a pressure below the air."""
+    if not math.isfinite(share):
+        return "more than all"
+    return f"{share:.0%}" if share > 0.0 else "none"

@@ -44,7 +44,7 @@ def test_shares_by_hand():
     assert share_of_limit(11e5, 21e5, 1e5) == pytest.approx(0.5)
     assert times_below(0.5) == pytest.approx(2.0)
     assert times_below(share_of_limit(0.5e5, 21e5, 1e5)) == math.inf
-    assert (share_text(0.875), share_text(math.inf)) == ("88%", "more than all")
+    assert [share_text(share) for share in (0.876, math.inf, -0.04)] == ["88%", "more than all", "none"]
 
 
 # Limits that the reading of a case refuses, put in behind its back: the air itself, below it, and half a pascal above.
