@@ -5,7 +5,8 @@ from __future__ import annotations
 import math
 from collections.abc import Iterator
 
-from retrofit.checks.corners import worst
+from retrofit.checks.at_rest import ABOVE_PLATE
+from retrofit.checks.corners import conditions, worst
 from retrofit.checks.gauge import share_text, times_below
 from retrofit.checks.hardware.rows import Bound, Matter, View, judged, performance_measure, stated
 from retrofit.study import Component, Measure
@@ -25,19 +26,22 @@ def _condensing(view: View) -> tuple[Measure, Measure]:
     )
 
 
-def _highest(view: View) -> float:
-    """Return the highest condensing pressure known, absolute. [Pa]"""
-    return worst(view.entry, "p_cond_Pa").value
+def _highest(view: View) -> float | None:
+    """Return the highest condensing pressure known, absolute; None if none is. [Pa]"""
+    if conditions(view.entry):
+        return worst(view.entry, "p_cond_Pa").value
+    return view.entry.at_rest.p_condensing_Pa if view.entry.at_rest else None
 
 
 def high_side(view: View) -> Iterator[Component]:
     """Compare condensing with the nameplate of the high side."""
-    plate, highest = view.case.plant.high_side_limit_Pa, _highest(view)
-    missing = [view.numbers.new.missing["hottest"]]
-    fact, share = f"Condensing reaches {_gauge(view, highest)}", view.share(highest, plate)
-    if share is None:
+    plate = view.case.plant.high_side_limit_Pa
+    missing, highest = [view.gap("hottest")], _highest(view)
+    fact = "It does not condense" if highest is None else f"Condensing reaches {_gauge(view, highest)}"
+    share = view.share(highest, plate)
+    if plate is None:
         missing.insert(0, "`high_side_limit` in [plant] is not given")
-    else:
+    elif share is not None:
         fact += f", {share_text(share)} of the nameplate pressure"
     measures = (*_condensing(view), view.pressures("Nameplate of the high side", OldNew(plate, plate)))
     ask = "Written confirmation of the maximum pressure of each vessel and part of the high side."
@@ -53,6 +57,7 @@ def switch(view: View) -> Iterator[Component]:
     """Compare the high-pressure switch, which stays with the vessel, with nameplate and hottest day."""
     cut_out = view.case.controls.high_pressure_cut_out_Pa if view.case.controls else None
     plate, highest = view.case.plant.high_side_limit_Pa, _highest(view)
+    assert highest is not None, "asked for solved refrigerants only"
     bounds = Bound(view.limits["switch_setting"]), Bound(view.limits["switch_margin"])
     ask = "Range of the switch; which setting the vessel, not the refrigerant, allows."
     measures = (view.pressures("Cut-out", OldNew(cut_out, cut_out)), *_condensing(view))
@@ -77,7 +82,7 @@ def switch(view: View) -> Iterator[Component]:
 
 def relief(view: View) -> Iterator[Component]:
     """Compare the relief valve of the high side with the highest pressure in operation and at rest."""
-    setting, rest = view.case.plant.relief_setting_Pa, view.numbers.new.p_standstill_Pa
+    setting, rest = view.case.plant.relief_setting_Pa, _rest(view).new
     plate, operating = view.case.plant.high_side_limit_Pa, _highest(view)
     bounds = Bound(view.limits["relief_margin"], "below"), Bound(view.limits["relief_seep"])
     measures = (
@@ -86,23 +91,23 @@ def relief(view: View) -> Iterator[Component]:
         _at_rest(view),
     )
     ask = "Setting, capacity and date of the relief valve; whether its material suits the refrigerant."
-    share = view.share(operating, setting)
-    if setting is None or share is None:
+    if setting is None:
         matter = Matter("relief", "Relief valve, setting", "", measures, bounds, ask)
         yield judged(matter, [], ["`relief_setting` in [plant] is not given"])
         return
-    margin = times_below(share)
-    levels = [bounds[0].level(margin), bounds[1].level(share)]
-    times = f"{margin:.2f} times" if math.isfinite(margin) else "above"
-    fact = f"It opens at {_gauge(view, setting)}, {times} the {_gauge(view, operating)} reached in operation"
-    at_rest, of_plate = view.share(rest, setting), view.share(setting, plate)
+    levels, fact = [view.level("relief")], f"It opens at {_gauge(view, setting)}"
+    share, at_rest, of_plate = view.share(operating, setting), view.share(rest, setting), view.share(setting, plate)
+    if operating is not None and share is not None:
+        margin = times_below(share)
+        levels += [bounds[0].level(margin), bounds[1].level(share)]
+        times = f"{margin:.2f} times" if math.isfinite(margin) else "above"
+        fact += f", {times} the {_gauge(view, operating)} reached in operation"
     if rest is not None and at_rest is not None:
-        levels.append("stop" if at_rest > 1.0 else bounds[1].level(at_rest))
+        levels.append(bounds[1].level(at_rest))
         fact += f"; at rest there are {_gauge(view, rest)}"
-    if plate is not None and of_plate is not None and of_plate > 1.0 + 1e-6:
-        levels.append("stop")
+    if plate is not None and of_plate is not None and of_plate > 1.0 + ABOVE_PLATE:
         fact += f"; it is set above the nameplate's {_gauge(view, plate)}"
-    gaps = [view.numbers.new.missing[name] for name in ("hottest", "standstill")]
+    gaps = [view.gap(name) for name in ("hottest", "standstill")]
     if plate is None:
         gaps.append("`high_side_limit` in [plant] is not given")
     matter = Matter("relief", "Relief valve, setting", f"{fact}.", measures, bounds, ask)
@@ -120,14 +125,16 @@ def relief_capacity(view: View) -> Iterator[Component]:
 
 
 def _at_rest(view: View) -> Measure:
-    return view.pressures(
-        "Pressure at rest", OldNew(view.numbers.old.p_standstill_Pa, view.numbers.new.p_standstill_Pa)
-    )
+    return view.pressures("Pressure at rest", _rest(view))
+
+
+def _rest(view: View) -> OldNew:
+    return OldNew(*(entry.at_rest.p_Pa if entry.at_rest else None for entry in (view.comparison.existing, view.entry)))
 
 
 def standstill(view: View) -> Iterator[Component]:
     """Compare the bubble pressure at the highest ambient temperature with the weakest side."""
-    plant, rest = view.case.plant, view.numbers.new.p_standstill_Pa
+    plant, rest = view.case.plant, _rest(view).new
     low, high = plant.low_side_limit_Pa, plant.high_side_limit_Pa
     weakest = min((plate for plate in (low, high) if plate is not None), default=None)
     bound = Bound(view.limits["standstill"])
@@ -136,7 +143,7 @@ def standstill(view: View) -> Iterator[Component]:
         view.pressures("Nameplate of the low side", OldNew(low, low)),
         view.pressures("Nameplate of the high side", OldNew(high, high)),
     )
-    gaps = [view.numbers.new.missing["standstill"]]
+    gaps = [view.gap("standstill")]
     gaps += ["`low_side_limit` in [plant] is not given"] if low is None else []
     share = view.share(rest, weakest)
     fact = ""
@@ -146,7 +153,7 @@ def standstill(view: View) -> Iterator[Component]:
         fact += f", {share_text(share)} of the lowest nameplate's {_gauge(view, weakest)}"
     ask = "Maximum pressure of the low side: evaporators, suction accumulators, crankcase."
     matter = Matter("standstill", "Low side at standstill", f"{fact}." if fact else "", measures, (bound,), ask)
-    yield judged(matter, [bound.level(share)], gaps)
+    yield judged(matter, [view.level("standstill"), bound.level(share)], gaps)
 
 
 def vacuum(view: View) -> Iterator[Component]:
@@ -185,3 +192,5 @@ def near_critical(view: View) -> Iterator[Component]:
 
 
 ROWS = (high_side, switch, relief, relief_capacity, standstill, vacuum, near_critical)
+# What needs no cycle.
+ROWS_AT_REST = (high_side, relief, standstill)
