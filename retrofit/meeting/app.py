@@ -56,7 +56,7 @@ class Meeting:
         """Return the page, or the part of it that changes."""
         moment = self.session.moment()
         board = build_board(moment, self.session.source, self.pictures, self.writer.said)
-        cautions, nonce = render_cautions(board), secrets.token_urlsafe(16)
+        cautions, nonce = render_cautions(board, is_topmost=False), secrets.token_urlsafe(16)
         template = "meeting-board.html" if is_part else "meeting.html"
         html = filled(template, board=board, page=board, cautions=cautions, token=self.token, nonce=nonce)
         return _html(told(html, UNIT_SYSTEMS[moment.state.units]), page_policy(nonce, str(cautions)))

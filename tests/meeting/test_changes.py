@@ -332,3 +332,11 @@ def test_what_rules_a_candidate_out_is_told_at_that_candidate(client):
 
     assert len(stopped) == 2
     assert all("Less mild safety class" in player.reasons for player in stopped)
+
+
+def test_the_cautions_scroll_under_what_stays_in_sight(client):
+    """The strip of the plant today stays at the top of the window: nothing of the block lies above it."""
+    html = client.get("/").text
+
+    assert 'id="cautions"' in html
+    assert "z-index:2147483647" not in html
