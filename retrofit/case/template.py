@@ -170,6 +170,9 @@ match = "mean"                   # refrigerants are compared at equal mean (or d
 # location = "II"                # I occupied space, II compressor outside it, III machinery room or open air,
 #                                  IV ventilated enclosure
 # below_ground = false
+# emergency_exits = true         # whether the room has emergency exits
+# people = 4                     # most people in it at one time
+# refrigerated = false           # whether it only processes or stores goods under refrigeration
 # comfort = false                # whether the plant is for human comfort
 # ventilation = "natural"        # none, natural or mechanical
 # largest_circuit = "80 kg"      # charge of the largest independent circuit today

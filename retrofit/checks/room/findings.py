@@ -28,6 +28,8 @@ def room_findings(comparison: Comparison, entry: Entry, room: RoomCheck) -> Iter
         yield _unknown(entry, room)
     else:
         yield from _doubtful(room)
+    if room.conditions and room.verdict != UNKNOWN:
+        yield _under_conditions(room, is_existing)
     change = room.change
     if change is not None and change.level in ("work", "note"):
         yield Finding(
@@ -73,6 +75,20 @@ def _above(room: RoomCheck, is_existing: bool) -> Finding:
         if is_existing
         else f"Less charge in a circuit, a machinery room, or another refrigerant; ask for the measures. {DEFERS}",
         f"{limit.source}; {limit.edition}",
+    )
+
+
+def _under_conditions(room: RoomCheck, is_existing: bool) -> Finding:
+    """Return the finding of a room without a limit of charge: what holds instead has to be shown, not assumed."""
+    limits = [limit for limit in room.limits if limit.role == "limit" and limit.conditions]
+    because = "; ".join(dict.fromkeys(f"{limit.code_family}: {limit.unlimited_because}" for limit in limits))
+    return Finding(
+        "room-conditions",
+        "note" if is_existing else "work",
+        "No limit of charge here, but conditions",
+        f"{_charge(room)}; {because}.",
+        f"Have each shown for this refrigerant: {'; '.join(room.conditions)}. {DEFERS}",
+        "; ".join(dict.fromkeys(limit.source for limit in limits)),
     )
 
 

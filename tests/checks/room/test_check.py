@@ -24,6 +24,9 @@ ROOM = {
     "location": "II",
     "below_ground": False,
     "comfort": False,
+    "emergency_exits": True,
+    "people": 2,
+    "refrigerated": False,
     "largest_circuit": "10 kg",
     "sealed": False,
 }
