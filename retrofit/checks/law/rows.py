@@ -20,7 +20,20 @@ SUBJECTS = (
     "proposal",
 )
 MEASURES = ("t CO2e", "kg", "lb", "GWP", "kW")
-GROUPS = ("CFC", "HCFC", "HFC", "HFO", "HCFO", "PFC", "HC", "inorganic", "ether", "chloroalkene", "iodofluorocarbon")
+GROUPS = (
+    "CFC",
+    "HCFC",
+    "halon",
+    "HFC",
+    "HFO",
+    "HCFO",
+    "PFC",
+    "HC",
+    "inorganic",
+    "ether",
+    "chloroalkene",
+    "iodofluorocarbon",
+)
 
 
 @dataclass(frozen=True)
