@@ -27,6 +27,7 @@ class WorkedLimit:
         unknown_because: What is missing, each with the key or value to give.
         open_because: Why the standard may allow more than `limit_kg`; empty if it does not.
         open_up_to_kg: Up to which charge that may be; None without a bound.
+        open_keys: Keys of [room] left out that would settle which row or rule holds.
         flags: What is from memory, unresolved or left out.
         source, basis: Where the rule comes from: "read" or "memory".
         applies_because: Why the rule is taken here.
@@ -53,6 +54,7 @@ class WorkedLimit:
     open_up_to_kg: float | None = None
     unlimited_because: str = ""
     conditions: tuple[str, ...] = ()
+    open_keys: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True)

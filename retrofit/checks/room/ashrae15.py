@@ -138,7 +138,8 @@ def rcl_limit(refrigerant: Refrigerant, room: Room, rcl: float | None = None, or
             f"m = {concentration(found)} · {room_volume(room.volume_m3)} · {factor:g} = {mass(limit)}",
         ]
     is_open = room.refrigerated is None and not room.comfort
-    return work.limit(RCL, limit, "volume", RCL_FOR, REFRIGERATED_OPEN if is_open else "")
+    why = REFRIGERATED_OPEN if is_open else ""
+    return work.limit(RCL, limit, "volume", RCL_FOR, why, open_keys=("refrigerated",))
 
 
 def _quarter_lfl(refrigerant: Refrigerant, room: Room) -> WorkedLimit:

@@ -2,8 +2,8 @@
 
 from __future__ import annotations
 
+from retrofit.case import areas
 from retrofit.checks.room.lists import asked, read
-from retrofit.checks.room.places import lies_in
 from retrofit.refrigerants import parse_safety_class
 from retrofit.refrigerants.safety import FLAMMABILITY_RANK, TOXICITY_RANK, SafetyClass
 from retrofit.study.room import ClassChange, Question
@@ -60,7 +60,7 @@ def what_is_asked(jurisdiction: str | None) -> tuple[Question, ...]:
     """
     rows = read("change")["asked"]
     held = sorted({name for row in rows for name in row["jurisdictions"]})
-    names = held if jurisdiction is None else [name for name in held if lies_in(jurisdiction, name)]
+    names = held if jurisdiction is None else [name for name in held if name in areas(jurisdiction)]
     found = [asked(row) for row in rows if not row["jurisdictions"] or set(row["jurisdictions"]) & set(names)]
     if jurisdiction is not None and names:
         return tuple(found)

@@ -206,8 +206,9 @@ def _settled(
             f"`sealed` in [room] is not given, and a factory-sealed system may hold {mass_told(always[0])} anywhere"
         )
     most = most if room.sealed is False else max(most, always[0])
-    up_to = None if len(masses) < len(known) else most
-    return work.limit(rule, least, decided_by, applies_because, "; ".join(reasons), up_to if reasons else None)
+    up_to = None if len(masses) < len(known) or not reasons else most
+    settling = (*keys, *(() if room.sealed is not None or "sealed" in keys else ("sealed",)))
+    return work.limit(rule, least, decided_by, applies_because, "; ".join(reasons), up_to, settling)
 
 
 def flammability_limit(refrigerant: Refrigerant, room: Room, family: str = "EN 378") -> WorkedLimit:

@@ -4,9 +4,10 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 
-# Charge rules by the jurisdiction that names begin with: EN 378 is the harmonised standard of Europe, ASHRAE 15 stands
-# behind the mechanical codes of the US.
-_CODES: Mapping[str, str] = {"EU": "EN 378", "GB": "EN 378", "NI": "EN 378", "US": "ASHRAE 15"}
+from retrofit.case import areas
+
+# EN 378 is the harmonised standard of Europe, ASHRAE 15 stands behind the mechanical codes of the US.
+_CODES: Mapping[str, str] = {"EU": "EN 378", "GB": "EN 378", "US": "ASHRAE 15"}
 
 
 def code_of(jurisdiction: str | None) -> str:
@@ -15,18 +16,7 @@ def code_of(jurisdiction: str | None) -> str:
     Args:
         jurisdiction: Whose law, None if not stated.
     """
-    return next((code for name, code in _CODES.items() if lies_in(jurisdiction, name)), "")
-
-
-def lies_in(jurisdiction: str | None, name: str) -> bool:
-    """Return whether a jurisdiction such as US-CA is another such as US, or a part of it.
-
-    Args:
-        jurisdiction: Whose law, None if not stated.
-        name: The other.
-    """
-    given = (jurisdiction or "").upper()
-    return given == name or given.startswith(f"{name}-")
+    return next((_CODES[area] for area in areas(jurisdiction or "") if area in _CODES), "")
 
 
 def holds_there(names: tuple[str, ...], jurisdiction: str | None) -> bool:
@@ -36,4 +26,4 @@ def holds_there(names: tuple[str, ...], jurisdiction: str | None) -> bool:
         names: Jurisdictions; empty for everywhere.
         jurisdiction: Whose law, None if not stated.
     """
-    return not names or jurisdiction is None or any(lies_in(jurisdiction, name) for name in names)
+    return not names or jurisdiction is None or bool(set(names) & set(areas(jurisdiction)))

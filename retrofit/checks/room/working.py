@@ -53,6 +53,7 @@ class Work:
         applies_because: str,
         open_because: str = "",
         open_up_to_kg: float | None = None,
+        open_keys: tuple[str, ...] = (),
     ) -> WorkedLimit:
         """Return the limit; one with anything missing is none."""
         is_known = limit_kg is not None and not self.missing
@@ -63,6 +64,7 @@ class Work:
             decided_by=decided_by if is_known else "",
             open_because=open_because if is_known else "",
             open_up_to_kg=open_up_to_kg if is_known else None,
+            open_keys=open_keys if is_known and open_because else (),
         )
 
     def no_limit(
@@ -87,6 +89,7 @@ class Work:
         open_up_to_kg: float | None = None,
         unlimited_because: str = "",
         conditions: tuple[str, ...] = (),
+        open_keys: tuple[str, ...] = (),
     ) -> WorkedLimit:
         return WorkedLimit(
             method=rule.method,
@@ -108,6 +111,7 @@ class Work:
             open_up_to_kg=open_up_to_kg,
             unlimited_because=unlimited_because,
             conditions=conditions,
+            open_keys=open_keys,
         )
 
 
