@@ -133,7 +133,7 @@ def code_text(case: Case) -> str:
     code, place = (case.law.code, case.law.jurisdiction) if case.law else (None, None)
     usual = code_of(place)
     if code is None and usual:
-        return f"By {usual}, which is usual in {place}: `code` in [law] would choose another."
+        return f"By {usual}, usual where the plant stands ({place}): `code` in [law] would choose another."
     if code is None:
         return "By ASHRAE 15 and by EN 378, which have to agree: `code` in [law] does not choose."
     return "By ASHRAE 15 and by EN 378; the stricter counts." if code == "both" else f"By {code}, as the case chooses."
