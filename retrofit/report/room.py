@@ -75,6 +75,7 @@ class RoomPart:
         facts: The room as (what, value).
         charge_of: Whose charge it is, in words.
         lines: One for each refrigerant.
+        conditions: What holds instead of a limit, by refrigerants.
         limits: Every method with its working.
         questions, machinery: What is asked; `machinery` is empty where nothing asks for a machinery room.
         steps: Changes of safety class.
@@ -85,6 +86,7 @@ class RoomPart:
     facts: tuple[tuple[str, str], ...]
     charge_of: str
     lines: tuple[RoomLine, ...]
+    conditions: tuple[tuple[str, tuple[str, ...]], ...]
     limits: tuple[LimitBlock, ...]
     questions: tuple[Asked, ...]
     machinery: tuple[Asked, ...]
@@ -116,6 +118,7 @@ def room_part(comparison: Comparison, units: UnitSystem) -> RoomPart | None:
         _facts(comparison.case, units),
         charge_of_text(checks[0][1]) if checks else "",
         room_lines(comparison, units),
+        condition_lines(comparison, units),
         _limit_blocks(checks, units),
         asked_texts(((entry, item) for entry, check in checks for item in check.questions), len(checks), units),
         asked_texts(((entry, item) for entry, check in checks for item in check.machinery_room), len(checks), units),
@@ -197,7 +200,7 @@ def _why(entry: Entry, check: RoomCheck) -> str:
     """Return which limit decides, what sets it and what is doubtful about it; of an unknown what is missing."""
     limit = check.deciding
     missing = f"Missing: {nameless(entry, '; '.join(check.unknown_because))}." if check.unknown_because else ""
-    instead = _instead(entry, check)
+    instead = _instead(check)
     if limit is None:
         return " ".join(text for text in (instead, missing) if text) or "No limit is known."
     said = [f"{limit.code_family}, {limit.title[:1].lower()}{limit.title[1:]}; set by the {limit.decided_by}"]
@@ -207,13 +210,25 @@ def _why(entry: Entry, check: RoomCheck) -> str:
     return " ".join([*(f"{text[:1].upper()}{text[1:]}." for text in said), instead, missing]).strip()
 
 
-def _instead(entry: Entry, check: RoomCheck) -> str:
-    """Return which rules set no limit of charge and what they ask for; nothing where every rule sets one."""
+def _instead(check: RoomCheck) -> str:
+    """Return which rules set no limit of charge; nothing where every rule sets one."""
     families = {limit.code_family for limit in check.limits if limit.role == "limit" and limit.unlimited_because}
-    if not check.conditions:
-        return ""
-    asked = nameless(entry, "; ".join(check.conditions))
-    return f"No limit of charge by {' and '.join(sorted(families))}, but conditions, each to be shown: {asked}."
+    return f"No limit of charge by {' and '.join(sorted(families))}, but conditions." if check.conditions else ""
+
+
+def condition_lines(comparison: Comparison, units: UnitSystem) -> tuple[tuple[str, tuple[str, ...]], ...]:
+    """Return what holds where no charge is set: refrigerants, and the conditions they share.
+
+    Args:
+        comparison: An assessed result.
+        units: The reader's units.
+    """
+    alone = (
+        (entry, tuple(nameless(entry, text) for text in all_told(entry.room, units).conditions))
+        for entry in comparison.entries
+        if entry.room is not None and entry.room.conditions
+    )
+    return tuple((names(entries), texts) for texts, entries in gathered(alone).items())
 
 
 def _facts(case: Case, units: UnitSystem) -> tuple[tuple[str, str], ...]:

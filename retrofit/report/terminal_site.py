@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from retrofit.report.law import NOTHING_HELD, LawCell, Mark, law_lines
-from retrofit.report.room import charge_of_text, code_text, has_room, room_lines
+from retrofit.report.room import charge_of_text, code_text, condition_lines, has_room, room_lines
 from retrofit.report.terminal_plant import Emphasis, row_names
 from retrofit.report.text_table import Column, paragraph, text_table
 from retrofit.study import Comparison, Entry
@@ -49,6 +49,15 @@ def room_text(comparison: Comparison, units: UnitSystem, columns: int, strong: E
             paragraph(rules.replace("`", ""), columns),
             text_table([column for column, _ in table], rows),
             *(paragraph(text, columns, indent="  ", first="") for text in said),
+            *(
+                paragraph(
+                    f"Instead of a limit for {who}, each to be shown: {'; '.join(texts)}.",
+                    columns,
+                    indent="  ",
+                    first="",
+                )
+                for who, texts in condition_lines(comparison, units)
+            ),
         ]
     )
 
