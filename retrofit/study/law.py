@@ -30,6 +30,7 @@ class Why(StrEnum):
     NO_CLASS = "safety class not stated"  # the refrigerant
     PAST_REVIEW = "past its review"  # the table, and the last day it could be used
     CONDITION = "condition"  # in words, from the table
+    NOT_READ = "not read"  # what of the law could not be read, in words, from the table
     STRADDLES = "on both sides of a limit"  # nothing: `Reason.measured` has the numbers
     SAFETY_CLAIMED = "safety exception claimed"  # nothing
     NO_LEAK_RATE = "leak rate not stated"  # the figure and the unit of the table

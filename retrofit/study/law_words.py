@@ -66,6 +66,7 @@ _REASONS = {
     Why.NO_CLASS: "the safety class of {0} is not stated",
     Why.PAST_REVIEW: "{0} was to be reviewed by {1} and gives no answer after that day",
     Why.CONDITION: "only if {0}",
+    Why.NOT_READ: "not read here, so that no answer is given: {0}",
     Why.STRADDLES: "the numbers lie on both sides of a limit",
     Why.SAFETY_CLAIMED: "the case claims the safety exception ({key}); the operator has to show the evidence",
     Why.NO_LEAK_RATE: "the leak rate is not stated ({key}); the table has {0} {1}",

@@ -135,6 +135,8 @@ def answer(row: Row, plant: Plant) -> Answer:
         return Answer(RowState.NO)
     if row.condition:
         said.append((RowState.DEPENDS, Reason(Why.CONDITION, (row.condition,)), None))
+    if row.not_read:
+        said.append((RowState.UNKNOWN, Reason(Why.NOT_READ, (row.not_read,)), None))
     if row.safety_exception and plant.law.safety_exception and row.safety_gwp is None:
         said.append((RowState.DEPENDS, Reason(Why.SAFETY_CLAIMED, keys=("law.safety_exception",)), None))
     states = {state for state, _, _ in said}

@@ -79,6 +79,7 @@ _ROW: Mapping[str, FileValue | Many] = {
     "safety_exception": YesNo(),
     "safety_gwp": Number(0.0, 1e5, "limits of law lie within it"),
     "condition": _SENTENCE,
+    "not_read": _SENTENCE,
     "applies_from": DAY,
     "applies_until": DAY,
     "series": _ID,

@@ -63,6 +63,7 @@ class Row:
         safety_exception, safety_gwp: Whether the row falls where safety at the site demands it, and the GWP from which
             it holds all the same; None if from none.
         condition: What else has to be so, in words, that no case says.
+        not_read: What of the law could not be read, in words; the row then gives no answer. Empty if all was.
         applies_from, applies_until, series: First and last day, and the rows that it follows or that follow it.
         exceptions, gwp_basis, document, clause, edition, address, date_checked, review_by, basis, confidence: As in
             `retrofit.study.law.LawRow`.
@@ -101,6 +102,7 @@ class Row:
     safety_exception: bool = False
     safety_gwp: float | None = None
     condition: str = ""
+    not_read: str = ""
     applies_from: datetime.date | None = None
     applies_until: datetime.date | None = None
     series: str = ""
