@@ -19,7 +19,7 @@ def day(text):
 
 @pytest.fixture(scope="session")
 def law_of(case_with):
-    """Return a function that reads the tables that come with the tool for a new plant, a refrigerant and a charge in kg.
+    """Return a function that reads the tables that come with the tool for a new plant and a charge in kg.
 
     The tables are read on 2026-12-01, whatever the day a check begins.
     """

@@ -21,6 +21,8 @@ NOTED = list(csv.DictReader((Path(__file__).parents[2] / "published" / "annex_iv
 ROWS = [row for row in shipped()["eu-2024-573.toml"].rows if row.subject == NEW]
 
 SPLIT = {"equipment": "heat pump", "arrangement": "multi split", "evaporator": "air", "condenser": "water"}
+STORE = {"equipment": "cold store", "arrangement": "built on site", "evaporator": "air"}
+DOUBLE_DUCT = {"equipment": "air conditioning", "arrangement": "double duct", "cooling": "5 kW"}
 PACKAGED = {"equipment": "heat pump", "arrangement": "self-contained"}
 # For each point: a refrigerant that meets it, the plant, and one that does not meet it in the same plant (None if the
 # limit is on a substance group that no refrigerant of the catalogue escapes below its GWP).
@@ -123,9 +125,9 @@ def test_the_day_before_and_the_day_of_each_point(law_of, point):
         ("R452B", {"equipment": "air conditioning", "arrangement": "single split"}, 2.99, "2025-01-01", set()),
         # Brine in a cold store or rink makes it a chiller, air does not.
         ("R134a", {"equipment": "ice rink", "evaporator": "brine"}, 50, "2027-01-01", {"7d"}),
-        ("R134a", {"equipment": "cold store", "arrangement": "built on site", "evaporator": "air"}, 50, "2029-12-31", set()),
+        ("R134a", STORE, 50, "2029-12-31", set()),
         # Fixed double duct counts as split, from air to air.
-        ("R32", {"equipment": "air conditioning", "arrangement": "double duct", "cooling": "5 kW"}, 3, "2029-01-01", {"9c"}),
+        ("R32", DOUBLE_DUCT, 3, "2029-01-01", {"9c"}),
         # Transport is not stationary: no point of the annex.
         ("R404A", {"equipment": "transport"}, 5, "2035-01-01", set()),
         # The rack that was built until now: R454A (GWP 237) at 120 kW, barred since 2022.
@@ -141,8 +143,7 @@ def test_size_charge_and_kind_decide(law_of, name, plant, kg, on, expected):
 
 def test_the_exceptions_as_each_point_has_them(law_of):
     """Cold products leave 5a; the cascade's primary circuit leaves 6 to GWP 1500; safety leaves 750 in point 8."""
-    store = {"equipment": "cold store", "arrangement": "built on site", "evaporator": "air"}
-    cold = read(law_of, "R404A", "2027-01-01", product_below_minus_50=True, **store)
+    cold = read(law_of, "R404A", "2027-01-01", product_below_minus_50=True, **STORE)
     primary = read(law_of, "R448A", "2027-01-01", cascade_primary=True)
     above = read(law_of, "R407A", "2027-01-01", cascade_primary=True)  # GWP 2107
     claimed = {**PACKAGED, "rated_capacity": "20 kW", "safety_exception": True}
@@ -204,7 +205,7 @@ def test_only_a_new_plant_meets_limits_for_new_equipment(law_of):
 
 
 def test_the_strictest_ban_at_the_change_and_the_next(law_of):
-    """Hand-read from annex IV and Art. 13 for R448A in a 30 kW supermarket plant, changed on 2027-04-01 and 2031-04-01."""
+    """Hand-read from annex IV and Art. 13: R448A in a supermarket plant of 30 kW, changed in 2027 and in 2031."""
     early = law_of("R448A", 50.0, cooling="30 kW")
     late = law_of("R448A", 50.0, cooling="30 kW", on="2031-04-01", date_of_change="2031-04-01")
     kept = law_of("R404A", 50.0, is_new_plant=False)

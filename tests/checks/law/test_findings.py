@@ -188,7 +188,7 @@ def new_plant(solved, candidate, on=ON, cooling_W=120e3, **law):
 
 
 def test_r454a_in_a_new_rack_of_120_kw_is_stopped(solved):
-    """Annex IV, point 6: barred since 2022 from racks of 40 kW and more; the stop names it, and its source the point."""
+    """Annex IV, point 6: barred since 2022 from racks of 40 kW and more; the source names the point."""
     found = new_plant(solved, "R454A")["law-new-equipment"]
 
     assert (found.level, found.missing) == ("stop", ())

@@ -100,7 +100,7 @@ def test_detection_in_the_eu(law_of, in_force, name, kg, compulsory):
 
 @pytest.mark.parametrize(("kg", "months"), [(34.3, None), (34.4, 12), (343.0, 12), (344.0, 6)])
 def test_a_blend_with_an_hfc_goes_by_its_weight_in_co2_alone(law_of, kg, months):
-    """Art. 3(4): a mixture that holds an HFC is an HFC. R454C: 0.215 x 675 + 0.785 x 0.501 = 145.5, so 5 t are 34.36 kg."""
+    """Art. 3(4): a mixture with an HFC is an HFC. R454C: 0.215 x 675 + 0.785 x 0.501 = 145.5, so 5 t are 34.36 kg."""
     check = law_of("R454C", kg)
 
     assert check.leak_check_months == months

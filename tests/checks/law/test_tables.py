@@ -19,6 +19,7 @@ from retrofit.study.law import Change, Limit, RowState, Why
 from retrofit.study.law_words import limit_text, line, problems
 
 ROWS = [(table, row) for table in shipped().values() for row in table.rows]
+EUROPE = [row for table, row in ROWS if table.file.startswith(("eu-", "gb-"))]
 GOOD = """\
 title = "An invented law"
 jurisdictions = ["other"]
@@ -53,9 +54,7 @@ def test_every_row_is_complete(table, row):
     assert (row.applies_from is None) == (row.subject == "proposal")
 
 
-@pytest.mark.parametrize(
-    "row", [row for table, row in ROWS if table.file.startswith(("eu-", "gb-"))], ids=lambda row: row.id
-)
+@pytest.mark.parametrize("row", EUROPE, ids=lambda row: row.id)
 def test_every_row_of_the_eu_and_great_britain_says_where_it_stands(row):
     """Document, clause, edition and address; what is not compared with the published text is not marked as read."""
     assert row.address.startswith(("http://data.europa.eu/", "https://www.legislation.gov.uk/", "https://"))
