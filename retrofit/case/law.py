@@ -85,13 +85,13 @@ class Law(Table):
     rated_capacity_W: Annotated[
         float | None, Quantity("power", "0.01 kW", "100 MW", "no single plant has more", example="45 kW")
     ] = key("rated_capacity", "Rated capacity of new equipment; if left out the duty is taken.", None)
-    cascade_primary: Annotated[bool, YesNo(), WhyDefault(_STRICTER)] = key(
-        "cascade_primary", "Whether it is the primary circuit of a cascade, which cools the others' condensers.", False
+    cascade_primary: Annotated[bool | None, YesNo()] = key(
+        "cascade_primary", "Whether it is the primary circuit of a cascade; not claimed if left out.", None
     )
-    safety_exception: Annotated[bool, YesNo(), WhyDefault(_STRICTER)] = key(
+    safety_exception: Annotated[bool | None, YesNo()] = key(
         "safety_exception",
-        "Whether safety requirements at the site rule out what the limit for new equipment leaves, with evidence.",
-        False,
+        "Whether safety at the site rules out what the limit for new equipment leaves; not claimed if left out.",
+        None,
     )
     hermetically_sealed: Annotated[bool, YesNo(), WhyDefault(_STRICTER)] = key(
         "hermetically_sealed", "Whether the equipment is hermetically sealed and labelled so.", False

@@ -180,7 +180,7 @@ def _about_plant(row: Row, plant: Plant) -> Iterator[Said]:
         yield _not_stated(*missing) if plant.transfer is None else _yes(plant.transfer == row.transfer)
     for name in ("hermetically_sealed", "leak_detection_system", "product_below_minus_50", "cascade_primary"):
         wanted = getattr(row, name)
-        yield _yes(wanted is None or wanted == getattr(plant.law, name))
+        yield _yes(wanted is None or wanted == bool(getattr(plant.law, name)))
 
 
 def _about_gas(row: Row, plant: Plant) -> Iterator[Said]:
