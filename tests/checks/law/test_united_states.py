@@ -1,8 +1,8 @@
 """US rows: what the final rule of 2026 left unread, listings by end use, allowances, and the end of new gas.
 
 Sources: Federal Register summary of 91 FR 31284 (effective 2026-07-27) and a trade summary of it; summaries of SNAP
-Rule 26 (89 FR 50410, new equipment only); the schedule of 42 USC 7675(e)(2)(C) as trade pages print it (90, 60, 30, 20 and
-15 % from 2022, 2024, 2029, 2034 and 2036); EPA fact sheet on HCFC (R22 ends 2020-01-01, all HCFC 2030).
+Rule 26 (89 FR 50410, new equipment only); the schedule of 42 USC 7675(e)(2)(C) as trade pages print it (90, 60, 30, 20
+and 15 % from 2022, 2024, 2029, 2034 and 2036); EPA fact sheet on HCFC (R22 ends 2020-01-01, all HCFC 2030).
 """
 
 import pytest
