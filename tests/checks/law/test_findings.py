@@ -198,16 +198,17 @@ def test_r454a_in_a_new_rack_of_120_kw_is_stopped(solved):
     assert "law-new-equipment" not in new_plant(solved, "R454C")
 
 
-def test_a_new_plant_whose_kind_is_missing_is_unknown_with_its_key(solved):
-    """R454A in a new cold store: self-contained it is barred since 2025, built on site from 2030: the key decides."""
-    unknown = new_plant(solved, "R454A", equipment="cold store")["law-new-equipment"]
-    built = new_plant(solved, "R454A", equipment="cold store", arrangement="built on site")
-    stopped = new_plant(solved, "R454A", equipment="cold store", arrangement="self-contained")
+def test_a_new_plant_whose_arrangement_is_missing_is_unknown_with_its_key(solved):
+    """R454B at 20 kW: self-contained it is barred since 2027-01-01 (8d), as a split from 2033 (9f): the key decides."""
+    given = {"equipment": "air conditioning", "cooling_W": 20e3}
+    unknown = new_plant(solved, "R454B", **given)["law-new-equipment"]
+    stopped = new_plant(solved, "R454B", arrangement="self-contained", **given)["law-new-equipment"]
+    split = new_plant(solved, "R454B", arrangement="multi split", **given)
 
-    assert (unknown.level, unknown.decisive) == ("unknown", True)
-    assert "law.arrangement" in unknown.missing
-    assert "law-new-equipment" not in built or built["law-new-equipment"].missing == ("evaporator.medium",)
-    assert stopped["law-new-equipment"].level in ("stop", "unknown")
+    assert (unknown.level, unknown.decisive, unknown.missing) == ("unknown", True, ("law.arrangement",))
+    assert stopped.level == "stop"
+    assert "law-new-equipment" not in split
+    assert "From 2033-01-01" in split["law-new-later"].fact
 
 
 def test_the_next_limit_is_noted_for_a_change_that_slips(solved):
