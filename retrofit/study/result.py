@@ -15,7 +15,7 @@ from retrofit.refrigerants import Caution, Refrigerant
 from retrofit.study.hardware.numbers import HardwareNumbers
 from retrofit.study.law import LawBasis, LawCheck
 from retrofit.study.room import RoomCheck
-from retrofit.study.states import Level, RestState, Verdict
+from retrofit.study.states import Family, Level, RestState, Verdict
 
 if TYPE_CHECKING:
     from retrofit.study.agreement import Beside, Calibration
@@ -337,7 +337,7 @@ class Entry:
     """
 
     refrigerant: Refrigerant
-    family: str
+    family: Family
     status: str
     reason: str | None
     cautions: tuple[Caution, ...]
