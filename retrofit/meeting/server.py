@@ -4,12 +4,13 @@ from __future__ import annotations
 
 import io
 import logging
+import signal
 import socket
 import threading
 import time
 import webbrowser
-from collections.abc import Callable
-from contextlib import suppress
+from collections.abc import Callable, Iterator
+from contextlib import contextmanager, suppress
 from typing import TYPE_CHECKING, Any
 
 from retrofit.errors import PortError
@@ -149,7 +150,8 @@ def serve(session: Session, port: int, is_opened: bool, say: Callable[[str], Non
     if is_opened:
         threading.Thread(target=webbrowser.open, args=(address,), daemon=True).start()
     try:
-        server.serve_forever(poll_interval=0.1)
+        with _ended_as_by_keyboard():
+            server.serve_forever(poll_interval=0.1)
     except KeyboardInterrupt:
         pass
     finally:
@@ -157,3 +159,16 @@ def serve(session: Session, port: int, is_opened: bool, say: Callable[[str], Non
     if any(thread.name == WRITING for thread in threading.enumerate()):
         say("A revision is being written and is finished first.")
     say("The meeting is over.")
+
+
+@contextmanager
+def _ended_as_by_keyboard() -> Iterator[None]:
+    """Take the signal to end, as a machine that shuts down sends it, for Ctrl-C: what is being written is finished."""
+    if threading.current_thread() is not threading.main_thread():
+        yield
+        return
+    before = signal.signal(signal.SIGTERM, signal.default_int_handler)
+    try:
+        yield
+    finally:
+        signal.signal(signal.SIGTERM, before)

@@ -198,6 +198,7 @@ class Session:
         """
         with self._lock:
             self._frozen = (*self._frozen, made)
+            self._refused.pop("freeze", None)  # what hindered an earlier try
             self._history.touch()
 
     def moment(self) -> Moment:

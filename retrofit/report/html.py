@@ -31,6 +31,7 @@ def render_html(
     # The command line imports this room for its other parts too: what is slow waits until it is needed.
     from retrofit.report.carried import with_block
     from retrofit.report.guard import check_page
+    from retrofit.report.mark import marked_page
     from retrofit.report.page import build_page
     from retrofit.report.templates import render_cautions
     from retrofit.units import UNIT_SYSTEMS, told
@@ -38,7 +39,7 @@ def render_html(
     page = build_page(comparison, UNIT_SYSTEMS[units], made_at)
     cautions = render_cautions(page)
     html = told(_filled(page, cautions, template_folder), UNIT_SYSTEMS[units])
-    html = with_block(html, comparison, units, made_at)
+    html = with_block(marked_page(html, comparison.case), comparison, units, made_at)
     check_page(html, cautions)
     return html
 
@@ -68,6 +69,7 @@ def render_site_copy(
         computed or a new plant, or as `render_html`.
     """
     from retrofit.report.guard import check_page
+    from retrofit.report.mark import marked_page
     from retrofit.report.site_copy import build_site_copy, candidate_named
     from retrofit.report.templates import render_cautions
     from retrofit.units import UNIT_SYSTEMS, told
@@ -75,7 +77,7 @@ def render_site_copy(
     entry = candidate_named(comparison, refrigerant)
     page = build_site_copy(comparison, entry, UNIT_SYSTEMS[units], made_at, T_inlet_today_K, despite)
     cautions = render_cautions(page)
-    html = told(_filled(page, cautions, template_folder), UNIT_SYSTEMS[units])
+    html = marked_page(told(_filled(page, cautions, template_folder), UNIT_SYSTEMS[units]), comparison.case)
     check_page(html, cautions)
     return html
 
