@@ -116,7 +116,7 @@ def tests_of(path: Path, only_own: bool) -> Iterator[list[str]]:
     room = path.relative_to(TOP / "retrofit").parts[0]
     every = sorted((TOP / "tests" / room).glob("**/test_*.py"))
     own = [item for item in every if path.stem.rstrip("s") in item.stem]
-    groups = [own] if only_own else [own, [item for item in every if item not in own]]
+    groups = [own or every] if only_own else [own, [item for item in every if item not in own]]
     yield from ([str(item.relative_to(TOP)) for item in group] for group in groups if group)
 
 
