@@ -18,7 +18,8 @@ _EFFECTS = (*_CYCLE, *_SUPERHEATS, "duty.subcooling")
 _MACHINE = ("compressor.isentropic_efficiency", "compressor.volumetric_efficiency", "compressor.heat_loss")
 _EXCHANGERS = tuple(f"{way}.{key}" for way in ("evaporator", "condenser") for key in ("film_factor", "pressure_drop"))
 _PLANT = (*_EFFECTS, *_MACHINE, *_EXCHANGERS, "evaporator.specific_heat", "condenser.specific_heat")
-_ALL = (*_PLANT, "year", "emissions", "money", "options")
+_ALL = (*_PLANT, "year", "emissions", "options")
+_LIFE = (*_ALL, "money")
 _GWP = ("emissions.gwp_edition",)
 # Defaults that the rows of a group of the comparison rest on, by the name of the group; a table of the case stands for
 # all of its keys.
@@ -36,8 +37,8 @@ GROUPS = {
     "parts": (*_PLANT, "year"),
     "charge": (),
     "tewi": (),
-    "yearly": ("money",),
-    "life": ("money", "options"),
+    "yearly": (),
+    "life": ("options",),
     "shares": _PLANT,
 }
 # And some rows on more, by a part of their label.
@@ -57,14 +58,18 @@ ROWS = {
     "Sum": _ALL,
     "Energy": (*_PLANT, "year"),
     "Demand charge": (*_PLANT, "year"),
-    "Saving against": _ALL,
-    "Simple payback": _ALL,
-    "Cost against": _ALL,
-    "The same: ": _ALL,
-    "Net present value": _ALL,
-    "Cost of CO2e": _ALL,
+    "Annual cost": _ALL,
+    "Annual saving": _ALL,
+    "Residual value": ("money.new_plant_life",),
+    "Life cost": _LIFE,
+    "Payback": _ALL,
+    "payback": _ALL,
+    "paying back": _ALL,
+    "pays back": _ALL,
+    "Net present value": _LIFE,
+    "Cost of CO2e": _LIFE,
     "less electricity": (*_PLANT, "year"),
-    "costs less": _ALL,
+    "costs less": _LIFE,
     "warms less": _ALL,
 }
 WORDS = ("What is done",)  # rows that rest on nothing
