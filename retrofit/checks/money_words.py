@@ -36,17 +36,21 @@ def item_name(code: str) -> str:
 
 
 def item_names(items: Iterable[Missing]) -> str:
-    """Return the names of items in a row, each once."""
-    return listed(list(dict.fromkeys(item_name(item.code) for item in items)), "and")
+    """Return the names of items in a row, each once; empty if there is none."""
+    names = list(dict.fromkeys(item_name(item.code) for item in items))
+    return listed(names, "and") if names else ""
 
 
 def missing_items_words(items: Iterable[Missing]) -> str:
-    """Return which items are missing, each with the key that gives it, or the reason where no key does."""
+    """Return which items are missing, each with the key that gives it, or the reason where no key does.
+
+    Empty if none is.
+    """
     names: dict[str, list[str]] = {}
     for item in items:
         names.setdefault(_given_by(item), []).append(item_name(item.code))
     return "; ".join(
-        f"{listed(list(dict.fromkeys(found)), 'and')} ({given})" if given else listed(list(dict.fromkeys(found)), "and")
+        f"{listed(list(dict.fromkeys(found)), 'and')}{f' ({given})' if given else ''}"
         for given, found in names.items()
     )
 

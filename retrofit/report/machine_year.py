@@ -218,7 +218,7 @@ def _money(comparison: Comparison, option: Prospect) -> dict[str, Any] | None:
         "life_cost_state": appraisal.life_cost.state.value,
         "life_cost_missing": _missing(appraisal.life_cost.missing),
         "residual_value_currency": number(appraisal.residual),
-        "new_plant_life_years": number(first.plant_life_years),
+        "new_plant_life_years": number(account.first_cost.plant_life_years) if account.first_cost else None,
         "discount_rate": money.discount_rate,
         "comparison_state": appraisal.state.value,
         "excluded_items": _missing(appraisal.excluded),
@@ -273,7 +273,7 @@ def _against(as_is: Prospect, option: Prospect) -> dict[str, Any] | None:
             for name, change in found.items()
         },
         "saving_is_alike": is_alike(as_is, option, "saving"),
-        "net_present_value_is_alike": is_alike(as_is, option, "npv"),
+        "npv_is_alike": is_alike(as_is, option, "npv"),
     }
 
 
