@@ -7,9 +7,10 @@ from typing import Annotated
 from pydantic import Field
 
 from retrofit.case.compressor import CURRENT, PHASES, POWER_FACTOR, VOLTAGE
+from retrofit.case.dates import YesNo
 from retrofit.case.exchangers import FLOW, SPECIFIC_HEAT
 from retrofit.case.table import Items, Table, key
-from retrofit.case.values import AbsolutePressure, Quantity, Text
+from retrofit.case.values import PRESSURE_LIMIT, AbsolutePressure, Quantity, Text
 
 MOST_FAN_STEPS = 20
 _PRESSURE = Annotated[float | None, AbsolutePressure("0.01 bar a", "300 bar a", "gauges of plants lie within it")]
@@ -70,6 +71,11 @@ class Readings(Table):
     condenser_specific_heat_J_per_kgK: Annotated[float | None, SPECIFIC_HEAT] = key(
         "condenser_specific_heat", "Specific heat of what flows through the condenser.", None
     )
+    calibrate: Annotated[bool | None, YesNo()] = key(
+        "calibrate",
+        "Whether power read over modelled power is taken as losses of motor and drive, alike for every option.",
+        None,
+    )
     hours_per_day: Annotated[float | None, Quantity("hours per day", "0", "24", "a day has no more")] = key(
         "hours_per_day", "Hours that the compressors run in a day.", None
     )
@@ -80,7 +86,9 @@ class Controls(Table):
 
     low_pressure_cut_out_Pa: _SET = key("low_pressure_cut_out", "Low-pressure switch stops the compressor.", None)
     low_pressure_cut_in_Pa: _SET = key("low_pressure_cut_in", "Low-pressure switch lets it start again.", None)
-    high_pressure_cut_out_Pa: _SET = key("high_pressure_cut_out", "High-pressure switch stops the compressor.", None)
+    high_pressure_cut_out_Pa: Annotated[float | None, PRESSURE_LIMIT] = key(
+        "high_pressure_cut_out", "High-pressure switch stops the compressor.", None
+    )
     rack_set_point_Pa: _SET = key("rack_set_point", "Suction pressure that the control of the rack holds.", None)
     evaporator_regulator_Pa: _SET = key(
         "evaporator_regulator", "Pressure that the evaporator pressure regulator holds.", None

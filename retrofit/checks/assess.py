@@ -3,26 +3,29 @@
 from __future__ import annotations
 
 import datetime
+from collections.abc import Sequence
 from dataclasses import replace
 
-from retrofit.checks.gates import GATES
+from retrofit.case import is_untouched
+from retrofit.checks.gates import GATES, GATES_OF_NEW_PLANT
 from retrofit.checks.hardware import hardware_findings, hardware_rows
 from retrofit.checks.law import law_findings, with_law
 from retrofit.checks.room import room_check, room_findings
 from retrofit.checks.thresholds import thresholds_for
-from retrofit.study import Comparison, Entry, Finding
+from retrofit.study import Comparison, Entry, Finding, Level, Verdict
 
-LEVELS = ("stop", "unknown", "work", "note")
-VERDICTS = {"stop": "does not suit", "unknown": "cannot be said", "work": "suits with work"}
-SUITS = "suits"
-# The order in which options die in practice: what is asked first is told first. A code counts from its beginning.
+LEVELS = tuple(Level)
+# The order of checking: what rules options out first in practice comes first. A code counts from its beginning.
 ORDER = (
+    "placeholders",
     "not-computed",
     "law",
     "ozone",
+    "pressure-class",
     "high-side",
     "standstill",
     "relief",
+    "hottest-day",
     "near-critical",
     "safety-class",
     "room",
@@ -36,6 +39,18 @@ ORDER = (
     "oil",
     "capacity",
     "condenser",
+)
+
+
+PLACEHOLDERS = Finding(
+    "placeholders",
+    Level.UNKNOWN,
+    "The values are placeholders",
+    "The case is the template as it was written; no value in it is of a plant.",
+    "Fill in the case first.",
+    "the case file",
+    ("plant.refrigerant", "duty.cooling", "duty.evaporating", "duty.condensing"),
+    decisive=True,
 )
 
 
@@ -56,7 +71,8 @@ def assess(comparison: Comparison, on: datetime.date | None = None) -> Compariso
 
 
 def _assessed(comparison: Comparison, entry: Entry) -> Entry:
-    found = [finding for gate in GATES for finding in gate(comparison, entry)]
+    gates = GATES_OF_NEW_PLANT if entry.is_new_plant else GATES
+    found = [finding for gate in gates for finding in gate(comparison, entry)]
     rows = hardware_rows(comparison, entry, found)
     found += hardware_findings(rows, entry is comparison.existing)
     found += law_findings(comparison, entry)
@@ -64,6 +80,8 @@ def _assessed(comparison: Comparison, entry: Entry) -> Entry:
     found += room_findings(comparison, entry, room)
     if entry.status != "ok":
         found.insert(0, _not_computed(entry))
+    if is_untouched(comparison.case.text):
+        found.insert(0, PLACEHOLDERS)
     found.sort(key=_place)
     return replace(entry, findings=tuple(found), hardware=rows, room=room, verdict=verdict(found))
 
@@ -75,15 +93,20 @@ def _place(finding: Finding) -> tuple[int, int]:
 
 
 def _not_computed(entry: Entry) -> Finding:
-    return Finding("not-computed", "unknown", "Not computed", f"{entry.reason}.", "", "limits of this tool")
+    return Finding(
+        "not-computed", Level.UNKNOWN, "Not computed", f"{entry.reason}.", "", "limits of this tool", decisive=True
+    )
 
 
-def verdict(findings: list[Finding]) -> str:
-    """Return the verdict: a stop decides, then a missing datum, then work. Missing data is never good.
+def verdict(findings: Sequence[Finding]) -> Verdict:
+    """Return the verdict: a stop decides, then a decisive fact that is missing, then what is to be done.
 
     Args:
         findings: What the gates found.
-    Returns: "does not suit", "cannot be said", "suits with work" or "suits".
     """
     levels = {finding.level for finding in findings}
-    return next((word for level, word in VERDICTS.items() if level in levels), SUITS)
+    if Level.STOP in levels:
+        return Verdict.NOT_SUITABLE
+    if any(finding.level == Level.UNKNOWN and finding.decisive for finding in findings):
+        return Verdict.OPEN
+    return Verdict.MODIFICATIONS if levels & {Level.UNKNOWN, Level.WORK} else Verdict.SUITABLE

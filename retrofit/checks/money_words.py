@@ -50,8 +50,7 @@ def missing_items_words(items: Iterable[Missing]) -> str:
     for item in items:
         names.setdefault(_given_by(item), []).append(item_name(item.code))
     return "; ".join(
-        f"{listed(list(dict.fromkeys(found)), 'and')}{f' ({given})' if given else ''}"
-        for given, found in names.items()
+        f"{listed(list(dict.fromkeys(found)), 'and')}{f' ({given})' if given else ''}" for given, found in names.items()
     )
 
 

@@ -66,6 +66,8 @@ def _head(comparison: Comparison, units: UnitSystem, columns: int, strong: Empha
 
 def _answer(found: Answer, columns: int) -> str:
     lines = [paragraph(found.headline, columns)]
+    if found.contradictions:
+        lines += ["", *(paragraph(text, columns) for text in found.contradictions)]
     for matter in found.matters:
         lines.append("")
         lines.append(paragraph(matter.about, columns))
@@ -160,6 +162,7 @@ def _compressor(comparison: Comparison, solved: Sequence[Entry], units: UnitSyst
         Column("Cooling vs", "today"),
         Column("Power vs", "today"),
     ]
+    solved = [entry for entry in solved if entry.compressor is not None]
     cells = [units.column(kind, [getattr(entry.compressor, name) for entry in solved]) for _, kind, name in kinds]
     ratios = [[change_cell(entry, comparison.existing, name) for entry in solved] for name in ("capacity", "power")]
     rows = [list(row) for row in zip(row_names(solved), *cells, *ratios, strict=True)]

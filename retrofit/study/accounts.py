@@ -41,7 +41,8 @@ class Accounts:
 
     Attributes:
         as_is: The plant of today, going on as it is: what savings and CO2e avoided are counted against.
-        options: Every option by designation; that of today's refrigerant is keeping the plant with its repairs.
+        options: Every computed option by designation; that of today's refrigerant is keeping the plant with its
+            repairs. What is not computed is not priced.
     """
 
     as_is: Account
@@ -62,7 +63,11 @@ def accounts(
     case, existing = comparison.case, comparison.existing
     today = plan_as_is(case, existing)
     plans = {AS_IS: today}
-    plans |= {entry.refrigerant.designation: plan_for(case, entry, existing) for entry in comparison.entries}
+    plans |= {
+        entry.refrigerant.designation: plan_for(case, entry, existing)
+        for entry in comparison.entries
+        if entry.is_computed or entry is existing
+    }
     use = {name: uses.get(plan.refrigerant.designation, NOT_KNOWN) for name, plan in plans.items()}
     warming = {name: tewi(case, plan, today, use[name], pick, on) for name, plan in plans.items()}
     if case.money is None:

@@ -11,6 +11,7 @@ from retrofit.case import Case, Range
 from retrofit.study.emissions import edition_of, gwp_of
 from retrofit.study.plan import Plan, life_years
 from retrofit.study.spread import FloatArray, Pick, Spread, low_base_high, single
+from retrofit.study.states import Family
 from retrofit.study.sums import Missing, Sum, SumState
 
 ITEMS = (
@@ -172,8 +173,19 @@ def _missing_item(case: Case, plan: Plan, code: str) -> Missing:
 def _missing_charge(case: Case, plan: Plan, code: str) -> Missing | None:
     if plan.charge_kg is not None:
         return None
+    return Missing(code, charge_keys(case, plan))
+
+
+def charge_keys(case: Case, plan: Plan) -> tuple[str, ...]:
+    """Return the keys that give the charge of an option; a new plant has its own.
+
+    Args:
+        case: The case.
+        plan: The option.
+    """
     own = f"options.{plan.refrigerant.designation}.charge"
-    return Missing(code, (own,) if case.plant.charge_kg is not None else ("plant.charge", own))
+    is_own = plan.family == Family.REPLACE or case.plant.charge_kg is not None
+    return (own,) if is_own else ("plant.charge", own)
 
 
 def _not_counted(plan: Plan, told: set[str]) -> tuple[str, ...]:

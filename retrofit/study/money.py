@@ -16,7 +16,8 @@ from numpy.typing import ArrayLike
 
 from retrofit.case import Case
 from retrofit.study.emissions import Tewi, leaked_kg_per_year
-from retrofit.study.first_cost import PLANT, FirstCost, levy_per_kg, price_of
+from retrofit.study.first_cost import PLANT, FirstCost, charge_keys, levy_per_kg, price_of
+from retrofit.study.law_words import reason_text
 from retrofit.study.plan import Plan, Use
 from retrofit.study.spread import FloatArray, Pick, Spread, low_base_high, single
 from retrofit.study.sums import ComparisonState, Missing, Sum, sum_of
@@ -103,9 +104,9 @@ def yearly_cost(case: Case, plan: Plan, use: Use, pick: Pick = low_base_high) ->
             Missing("energy", () if case.year else ("year",), "electricity of a year is not computed"),
         ),
         "demand": (_per(use.peak_W, W_PER_KW), _no_peak(plan)),
-        "top_up": (leak_kg, _no_leak("top_up", plan)),
+        "top_up": (leak_kg, _no_leak("top_up", case, plan)),
         "leak_checks": (checks, no_checks),
-        "levy": (leak_kg, _no_leak("levy", plan)),
+        "levy": (leak_kg, _no_leak("levy", case, plan)),
         "service": (1.0, Missing("service")),
     }
     no_price = {
@@ -144,11 +145,11 @@ def _no_peak(plan: Plan) -> Missing:
     return Missing("demand", keys, "peak power of the year is not computed")
 
 
-def _no_leak(code: str, plan: Plan) -> Missing:
+def _no_leak(code: str, case: Case, plan: Plan) -> Missing:
     """Return what is missing for the refrigerant lost in a year."""
     own = f"options.{plan.refrigerant.designation}"
     if plan.charge_kg is None:
-        return Missing(code, (plan.charge_key, f"{own}.charge"), plan.charge_missing)
+        return Missing(code, charge_keys(case, plan))
     return Missing(code, ("emissions.leak_rate", f"{own}.leak_rate"), plan.leak.missing)
 
 
@@ -158,7 +159,7 @@ def _leak_checks(plan: Plan) -> tuple[float | None, Missing]:
         return None, Missing("leak_checks", ("law.jurisdiction",))
     if plan.law.leak_check_months:
         return MONTHS / plan.law.leak_check_months, Missing("leak_checks")
-    reasons = "; ".join(plan.law.unknown)
+    reasons = "; ".join(map(reason_text, plan.law.leak_check_open))
     return (None if reasons else 0.0), Missing("leak_checks", (), f"time between leak checks: {reasons}")
 
 

@@ -15,8 +15,10 @@ from retrofit.refrigerants import Caution, Refrigerant
 from retrofit.study.hardware.numbers import HardwareNumbers
 from retrofit.study.law import LawBasis, LawCheck
 from retrofit.study.room import RoomCheck
+from retrofit.study.states import Family, Level, RestState, Verdict
 
 if TYPE_CHECKING:
+    from retrofit.study.agreement import Beside, Calibration
     from retrofit.study.life import Life
 
 FloatArray = NDArray[np.float64]
@@ -106,6 +108,8 @@ class Installed:
         residual: Largest relative error of the balance.
         hottest: At full on the hottest day; None if its temperature is not known or the plant does not balance there.
         hottest_reason: Why it does not balance there.
+        electric_W, mean_electric_W: Electrical power at full, and mean over the time, with the losses of motor and
+            drive as far as the case gives them or its readings calibrate them.
     """
 
     full: Performance[float]
@@ -118,6 +122,8 @@ class Installed:
     residual: float
     hottest: Performance[float] | None = None
     hottest_reason: str = ""
+    electric_W: float = float("nan")
+    mean_electric_W: float = float("nan")
 
 
 @dataclass(frozen=True)
@@ -131,6 +137,8 @@ class Finding:
         fact: The number of this refrigerant against the threshold.
         advice: What follows and what to do, the same for every refrigerant; may be empty.
         source: Where the threshold comes from.
+        missing: Full keys of the case that would settle an unknown; any one of them may do.
+        decisive: Whether no verdict can be in favour while this is unknown.
     """
 
     code: str
@@ -139,6 +147,8 @@ class Finding:
     fact: str
     advice: str
     source: str
+    missing: tuple[str, ...] = ()
+    decisive: bool = False
 
     @property
     def text(self) -> str:
@@ -214,11 +224,13 @@ class Baseline:
         derived: Quantities derived from the readings.
         problems: What is wrong or does not fit together in the readings; never silently used.
         missing: What could not be derived, and which reading it would need.
+        in_doubt: Key in [readings] or [compressor] of what is in doubt, and the title of the problem that says so.
     """
 
     derived: tuple[Derived, ...]
     problems: tuple[Finding, ...]
     missing: tuple[str, ...]
+    in_doubt: Mapping[str, str] = field(default_factory=dict)
 
 
 @dataclass(frozen=True)
@@ -271,17 +283,46 @@ class ChartLines:
 
 
 @dataclass(frozen=True)
+class AtRest:
+    """A refrigerant in the plant at rest, and where it would condense, known also where no cycle can be solved.
+
+    Attributes:
+        state: What is known of the pressure at rest.
+        p_Pa: Bubble pressure at the highest ambient temperature; None unless it is computed.
+        T_highest_K: The highest ambient temperature; None if the case does not give it.
+        T_critical_K: Critical temperature; None without a model.
+        T_condensing_K: Condensing temperature of the case.
+        p_condensing_Pa: Bubble pressure there; None where it is not computed.
+    """
+
+    state: RestState
+    p_Pa: float | None
+    T_highest_K: float | None
+    T_critical_K: float | None
+    T_condensing_K: float
+    p_condensing_Pa: float | None
+
+    @property
+    def can_condense(self) -> bool | None:
+        """Return whether it condenses at the condensing temperature of the case; None if that is not known."""
+        return None if self.T_critical_K is None else self.T_critical_K > self.T_condensing_K
+
+
+@dataclass(frozen=True)
 class Entry:
     """One refrigerant of a study: the existing one or a candidate.
 
     Attributes:
         refrigerant: Its catalogue entry.
         family: "keep", "convert" or "replace".
+        is_new_plant: Whether the case describes a new plant for it: then nothing of the existing machine counts.
         status: "ok" or "not computed"; `reason` then says why.
         grade: How far its model can be trusted, None without a model.
         duty: Same duty: displacement, mass flow and power follow.
         compressor: Same compressor: capacity and power follow.
         plant: Same plant, None with `plant_reason` if the case does not describe it or it does not balance.
+        like_today: A new plant with exchangers like today's, from which its year is sized; None for other options.
+        at_rest: The plant at rest with it.
         points: State points of the cycle, beginning at the compressor inlet.
         lines: Lines for its pressure-enthalpy chart.
         relative: Ratios to the existing refrigerant.
@@ -296,7 +337,7 @@ class Entry:
     """
 
     refrigerant: Refrigerant
-    family: str
+    family: Family
     status: str
     reason: str | None
     cautions: tuple[Caution, ...]
@@ -305,6 +346,8 @@ class Entry:
     compressor: Performance[float] | None = None
     plant: Installed | None = None
     plant_reason: str | None = None
+    like_today: Installed | None = None
+    at_rest: AtRest | None = None
     points: tuple[Point, ...] = ()
     lines: ChartLines | None = None
     relative: Mapping[str, float] = field(default_factory=dict)
@@ -315,8 +358,29 @@ class Entry:
     law: LawCheck | None = None
     findings: tuple[Finding, ...] = ()
     hardware: tuple[Component, ...] = ()
-    verdict: str = ""
+    verdict: Verdict = Verdict.NOT_JUDGED
     room: RoomCheck | None = None
+    is_new_plant: bool = False
+
+    @property
+    def is_computed(self) -> bool:
+        """Return whether there are numbers of it. [-]"""
+        return self.status == "ok"
+
+    @property
+    def stops(self) -> tuple[Finding, ...]:
+        """Return what stops it, in the order of checking."""
+        return tuple(finding for finding in self.findings if finding.level == Level.STOP)
+
+    @property
+    def open_facts(self) -> tuple[Finding, ...]:
+        """Return the decisive facts that are missing, in the order of checking."""
+        return tuple(item for item in self.findings if item.level == Level.UNKNOWN and item.decisive)
+
+    @property
+    def can_be_chosen(self) -> bool:
+        """Return whether it is computed and no check stops it; it may still be open. [-]"""
+        return self.is_computed and not self.stops
 
 
 @dataclass(frozen=True)
@@ -333,6 +397,8 @@ class Comparison:
         baseline: How the plant runs today, None if the case has no readings.
         law: Jurisdiction, day and tables behind what is said of law; None if the case names no jurisdiction.
         life: Year, emissions, money and how sure they are; None until asked for.
+        beside: The readings beside the model of today's plant; empty without readings.
+        calibration: Losses of motor and drive taken from the power read; None if the case does not ask for it.
         places: Where a part of a comparison is shown, the place of each refrigerant in the whole; empty for the whole.
     """
 
@@ -345,6 +411,8 @@ class Comparison:
     baseline: Baseline | None = None
     law: LawBasis | None = None
     life: Life | None = None
+    beside: tuple[Beside, ...] = ()
+    calibration: Calibration | None = None
     places: Mapping[str, int] = field(default_factory=dict)
 
     @property

@@ -6,6 +6,7 @@ from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass
 
 from retrofit.case import Case
+from retrofit.checks.gauge import share_of_limit
 from retrofit.checks.thresholds import Threshold
 from retrofit.study import Comparison, Component, Entry, Finding, Measure
 from retrofit.study.hardware.numbers import HardwareNumbers, OldNew
@@ -46,6 +47,11 @@ class View:
         """Return whether this is the refrigerant in the plant."""
         return self.entry is self.comparison.existing
 
+    def gap(self, name: str) -> str:
+        """Return why a number of the new refrigerant is not known, in words; empty if it is."""
+        numbers = self.entry.hardware_numbers
+        return numbers.new.missing[name] if numbers else f"{self.entry.refrigerant.designation} is not computed"
+
     def level(self, code: str) -> str | None:
         """Return the level of the gates' finding with a code, None if they found nothing."""
         return next((finding.level for finding in self.findings if finding.code == code), None)
@@ -61,6 +67,16 @@ class View:
             p_Pa: Pressure, absolute. [Pa]
         """
         return None if p_Pa is None else p_Pa - self.case.plant.ambient_pressure_Pa
+
+    def share(self, p_Pa: float | None, limit_Pa: float | None) -> float | None:
+        """Return a pressure as part of a limit, as gauges at the plant show both; None if one is not known. [-]
+
+        Args:
+            p_Pa, limit_Pa: Pressure and limit, absolute. [Pa]
+        """
+        if p_Pa is None or limit_Pa is None:
+            return None
+        return share_of_limit(p_Pa, limit_Pa, self.case.plant.ambient_pressure_Pa)
 
     def pressures(self, name: str, p: OldNew) -> Measure:
         """Return a measure of two pressures as gauges show them."""
@@ -145,6 +161,8 @@ def stated(matter: Matter, verdict: str, missing: Sequence[str] = (), source: st
 
 def performance_measure(view: View, name: str, kind: str, quantity: str, condition: str = "design") -> Measure:
     """Return a measure of one quantity of the performance at a condition, old and new."""
+    if view.entry.hardware_numbers is None:
+        return Measure(name, kind, None, None)
     sides = (getattr(side, condition) for side in (view.numbers.old, view.numbers.new))
     old, new = (None if side is None else float(getattr(side, quantity)) for side in sides)
     if kind == "gauge pressure":
