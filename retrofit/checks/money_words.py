@@ -10,7 +10,9 @@ from retrofit.study.sums import Missing, SumState
 from retrofit.units import format_number, listed
 
 NO_LIFE = "remaining life needed (`law.remaining_life`)"
-AT_LEAST = "≥\N{NARROW NO-BREAK SPACE}"
+THIN_SPACE = "\N{NARROW NO-BREAK SPACE}"
+AT_LEAST = f"≥{THIN_SPACE}"
+LONGEST_YEARS = 100.0
 INCOMPLETE = "incomplete"
 INCOMPLETE_WORDS = "items known for only one option are excluded, so it is not said to save money"
 AT_LEAST_WORDS = "at least: an item is missing"
@@ -70,15 +72,17 @@ def sum_text(state: SumState, text: str) -> str:
 
 
 def years_text(found: Payback) -> str:
-    """Return a payback in a cell: its years, or its state where it has none."""
-    return found.state.value if found.years is None else format_number(found.years, 1)
+    """Return a payback in a cell: its years, or its state where it has none; beyond a lifetime no number means much."""
+    if found.years is None:
+        return found.state.value
+    return f">{THIN_SPACE}{LONGEST_YEARS:g}" if found.years > LONGEST_YEARS else format_number(found.years, 1)
 
 
 def payback_words(found: Payback) -> str:
     """Return a payback as a sentence part that stands by itself."""
     if found.years is None:
         return "payback unknown" if found.state is PaybackState.UNKNOWN else PAYBACK_WORDS[found.state]
-    years = f"payback in {format_number(found.years, 1)} years"
+    years = f"payback in {years_text(found)} years"
     if found.life_years is None:
         return f"{years}; {NO_LIFE}"
     life = f"{found.life_years:g} years"

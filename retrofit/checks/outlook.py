@@ -252,7 +252,7 @@ def _by_difference(
 def _unknown(option: Prospect, missing: str) -> str:
     """Return what is missing, told so that options that lack the same stand together."""
     own = f"[options.{option.entry.refrigerant.designation}]"
-    return f"unknown, for want of {missing.replace(own, 'its table in [options]')}"
+    return f"unknown: missing {missing.replace(own, 'its table in [options]')}"
 
 
 def _energy(options: tuple[Prospect, ...], units: UnitSystem) -> Matter:
@@ -401,7 +401,7 @@ def _with_band(comparison: Comparison, lead: Headline, signed: bool = False) -> 
 
 
 def incomplete_words(comparison: Comparison, option: Prospect) -> tuple[str, str]:
-    """Return why the net present value of an option is not said: the state, and the option with what it needs.
+    """Return why the net present value of an option is not said: the state with what it needs, and the option.
 
     Args:
         comparison: An assessed result with its remaining life.
@@ -409,9 +409,10 @@ def incomplete_words(comparison: Comparison, option: Prospect) -> tuple[str, str
     """
     found, needs = compared(option, "npv"), missing_words(option, "npv")
     if found.state is not ComparisonState.INCOMPLETE:
-        return UNKNOWN, f"{option.name}, needs {needs}"
+        return f"{UNKNOWN}, needs {needs}", option.name
     known = money_text(comparison, found.of_known, signed=True)
-    return f"{INCOMPLETE}: {INCOMPLETE_WORDS}", f"{option.name} without {needs}, {known} on the items known for both"
+    heading = f"{INCOMPLETE} without {needs}: {INCOMPLETE_WORDS}"
+    return heading, f"{option.name} {known} on the items known for both"
 
 
 def _paybacks(comparison: Comparison, options: tuple[Prospect, ...]) -> Groups:
@@ -431,8 +432,8 @@ def _payback_of_median(comparison: Comparison, as_is: Prospect, option: Prospect
     drawn = payback_quantiles(option)
     found = payback(option) if drawn is None else drawn[1]
     if found.state is PaybackState.UNKNOWN and found.years is None:
-        heading, _ = incomplete_words(comparison, option)
-        return heading, option.name
+        is_short = compared(option, "npv").state is ComparisonState.INCOMPLETE
+        return INCOMPLETE if is_short else UNKNOWN, option.name
     is_near = found.state is PaybackState.WITHIN and is_alike(as_is, option, "saving")
     words = NO_LIFE if found.state is PaybackState.UNKNOWN else PAYBACK_WORDS[found.state]
     return words + (INSIDE_BAND if is_near else ""), f"{option.name}{_payback_years(option, found, drawn)}"
@@ -656,8 +657,7 @@ def _pays_words(comparison: Comparison, as_is: Prospect, option: Prospect) -> It
     drawn = payback_quantiles(option)
     found = payback(option) if drawn is None else drawn[1]
     if found.state is PaybackState.UNKNOWN and found.years is None:
-        heading, _ = incomplete_words(comparison, option)
-        yield f"payback and net present value {heading} (needs {missing_words(option, 'npv')})"
+        yield f"payback and net present value {incomplete_words(comparison, option)[0]}"
         return
     near = INSIDE_BAND if found.state is PaybackState.WITHIN and is_alike(as_is, option, "saving") else ""
     if found.years is None:

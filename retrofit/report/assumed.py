@@ -39,6 +39,7 @@ GROUPS = {
     "charge": (),
     "tewi": (),
     "yearly": (),
+    "once": ("options",),
     "life": ("options",),
     "shares": _PLANT,
 }

@@ -5,8 +5,9 @@ from __future__ import annotations
 from collections.abc import Callable
 from dataclasses import dataclass
 
+from retrofit.checks.money_words import INCOMPLETE
 from retrofit.checks.outlook import KG_PER_T, TOLD, currency, result_text, rounded_text
-from retrofit.checks.prospects import Prospect, life_of_result, probability, quantile, ranked
+from retrofit.checks.prospects import Prospect, compared, life_of_result, probability, quantile, ranked
 from retrofit.figures.tornado import limits_text
 from retrofit.report.judging import spelled
 from retrofit.report.plain import plain
@@ -15,6 +16,7 @@ from retrofit.report.table import MOST_COLUMNS, Cell, Group, Row, Table
 from retrofit.study import Comparison
 from retrofit.study.life import Life
 from retrofit.study.ranking import MEANING, SCALE
+from retrofit.study.sums import ComparisonState
 from retrofit.study.uncertain import Uncertain
 from retrofit.units import MISSING, UnitSystem, format_number, listed
 
@@ -72,8 +74,12 @@ def _share(options: Options, option: Prospect, name: str) -> Cell:
     if value is None and name == "carries" and option.account.plan.family == "replace" and option.certainty:
         mark = options.notes.mark(shown_name(option), "a new plant is sized to carry what is needed")
         return Cell("sized for it", is_number=False, marks=(mark,))
+    rests_on = RESTS_ON.get(name, "energy")
+    if value is None and rests_on == "npv" and compared(option, "npv").state is ComparisonState.INCOMPLETE:
+        mark = options.notes.mark(shown_name(option), f"{INCOMPLETE} without {missing_of(rests_on)(option)}")
+        return Cell(INCOMPLETE, is_number=False, marks=(mark,))
     if value is None:
-        return options.unknown(option, missing_of(RESTS_ON.get(name, "energy"))(option))
+        return options.unknown(option, missing_of(rests_on)(option))
     return Cell(chance(value))
 
 

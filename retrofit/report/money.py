@@ -38,6 +38,8 @@ from retrofit.study.spread import at
 from retrofit.study.sums import ComparisonState, SumState
 from retrofit.units import MISSING, format_number
 
+BAND = "P10 · P50 · P90".replace(" ", "\N{NO-BREAK SPACE}")
+
 
 @dataclass(frozen=True)
 class Costs:
@@ -62,7 +64,8 @@ def money_table(comparison: Comparison, options: Options) -> Table | None:
     unit = currency(comparison)
     groups = (
         Group("yearly", "Each year", _yearly(options, unit)),
-        Group("life", "Paid once, and the remaining life", (*_first(options, unit), *_life(comparison, options, unit))),
+        Group("once", "Paid once, and paid back", (*_first(options, unit), *_back(comparison, options))),
+        Group("life", "Life cost and net present value", _life(comparison, options, unit)),
     )
     basis = (
         f"Basis: {unit} as the case gives them, prices as today over the remaining life. Annual saving and net present "
@@ -101,7 +104,7 @@ def _first(options: Options, unit: str) -> tuple[Row, ...]:
     return (
         Row("First cost", unit, tuple(base(option) for option in options.all)),
         Row("Every item low to every high", unit, tuple(spread(option) for option in options.all)),
-        options.three_quantiles("First cost: P10 · P50 · P90", unit, "first_cost", float),
+        options.three_quantiles(f"First cost: {BAND}", unit, "first_cost", float),
     )
 
 
@@ -132,7 +135,7 @@ def _yearly(options: Options, unit: str) -> tuple[Row, ...]:
         *rows,
         Row("Annual cost", unit, tuple(_sum_cell(options, option, "yearly_cost") for option in options.all)),
         Row("Annual saving against the plant as it is", unit, tuple(saving(option) for option in options.all)),
-        options.three_quantiles("Annual saving: P10 · P50 · P90", unit, "yearly_saving", float, signed=True),
+        options.three_quantiles(f"Annual saving: {BAND}", unit, "yearly_saving", float, signed=True),
     )
 
 
@@ -164,6 +167,18 @@ def _part_missing(code: str) -> Callable[[Prospect], str]:
     return why
 
 
+def _back(comparison: Comparison, options: Options) -> tuple[Row, ...]:
+    as_is = options.all[0]
+    base = Row("Simple payback", "years", tuple(_payback(options, option) for option in options.all))
+    if not life_of_result(comparison).certainty:
+        return (base,)
+    return (
+        base,
+        Row(f"Payback: {BAND}", "years", tuple(_paybacks(option, as_is) for option in options.all)),
+        Row("Probability of paying back", "%", tuple(_pays_back(option, as_is) for option in options.all)),
+    )
+
+
 def _life(comparison: Comparison, options: Options, unit: str) -> tuple[Row, ...]:
     as_is, how = options.all[0], discounting_words(comparison)
 
@@ -176,23 +191,13 @@ def _life(comparison: Comparison, options: Options, unit: str) -> tuple[Row, ...
         text = rounded_text(amount, signed=True)
         return Cell(near(text) if is_alike(as_is, option, "npv") else text)
 
-    rows = [
+    return (
         Row("Residual value of the new plant", unit, tuple(_residual(options, option) for option in options.all)),
         Row(f"Life cost, {how}", unit, tuple(_sum_cell(options, option, "life_cost") for option in options.all)),
-        options.three_quantiles("Life cost: P10 · P50 · P90", unit, "life_cost", float),
-        Row("Simple payback", "years", tuple(_payback(options, option) for option in options.all)),
-    ]
-    if life_of_result(comparison).certainty:
-        rows += [
-            Row("Payback: P10 · P50 · P90", "years", tuple(_paybacks(option, as_is) for option in options.all)),
-            Row("Probability of paying back", "%", tuple(_pays_back(option, as_is) for option in options.all)),
-        ]
-    return (
-        *rows,
         Row(f"Net present value, {how}", unit, tuple(npv(option) for option in options.all)),
-        options.three_quantiles("Net present value: P10 · P50 · P90", unit, "npv", float, signed=True),
+        options.three_quantiles(f"Net present value: {BAND}", unit, "npv", float, signed=True),
         Row("Cost of CO2e avoided", f"{unit}/t", tuple(_per_tonne(comparison, options, o) for o in options.all)),
-        options.three_quantiles("Cost of CO2e avoided: P10 · P50 · P90", f"{unit}/t", "cost_per_t", float),
+        options.three_quantiles(f"Cost of CO2e avoided: {BAND}", f"{unit}/t", "cost_per_t", float),
     )
 
 
@@ -217,7 +222,7 @@ def _payback(options: Options, option: Prospect) -> Cell:
     marks = (options.notes.mark(shown_name(option), payback_words(found)),) if is_said else ()
     if found.years is None:
         return Cell(found.state.value, is_number=False, marks=marks)
-    text = format_number(found.years, 1)
+    text = years_text(found)
     return Cell(near(text) if is_alike(as_is, option, "saving") else text, marks=marks)
 
 

@@ -69,7 +69,7 @@ class Options:
         # So that options that lack the same share a note.
         told = why.replace(price, "its price, in `refrigerant_price`").replace(own, "its table in [options]")
         text = spelled(told)
-        marks = (self.notes.mark(shown_name(option), f"unknown, for want of {text}"),) if why else ()
+        marks = (self.notes.mark(shown_name(option), f"unknown: missing {text}"),) if why else ()
         return Cell(UNKNOWN, is_number=False, marks=marks)
 
     def changes(self, label: str, quantity: str) -> Row:

@@ -179,7 +179,7 @@ class Saving:
 
     Attributes:
         by_part: The saving by its code in PARTS; only parts that are known for both.
-        state: Whether it counts every part, only those known for both, or is not known for want of the energy.
+        state: Whether it counts every part, only those known for both, or is not known because the energy is not.
         of_known: The sum of `by_part`; None where the state is unknown. [currency/year]
         excluded: Parts that are known for one of the two alone.
         not_counted: Parts that are known for neither.

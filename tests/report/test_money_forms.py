@@ -1,4 +1,4 @@
-"""Money in every form: one sign, one quantity with its own percentiles, and no option cheap for want of a price."""
+"""Money in every form: one sign, one quantity with its own percentiles, and no option made cheap by a missing price."""
 
 import csv
 import io
@@ -147,7 +147,7 @@ def test_a_missing_price_makes_nothing_cheaper_in_any_form(unpriced, page, made_
     assert rows(text, "Life cost and net present value")[place][1].startswith("≥")
     assert rows(text, "Life cost and net present value")[place][2] == "incomplete"
     assert f"`{KEY}`" in " ".join(text.split())
-    assert cells(shown, "life", "First cost")[place].startswith("≥")
+    assert cells(shown, "once", "First cost")[place].startswith("≥")
     assert cells(shown, "life", "Net present value, ")[place].startswith("incomplete")
     assert KEY in shown.text
     assert row["Net present value"] is None

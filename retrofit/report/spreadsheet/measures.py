@@ -258,11 +258,11 @@ def _gwp_doubt(option: Prospect) -> str:
 
 
 def _charge_missing(option: Prospect) -> str:
-    return _for_want_of(option.account.plan.charge_missing)
+    return _lacking(option.account.plan.charge_missing)
 
 
 def _leak_missing(option: Prospect) -> str:
-    return _for_want_of(option.account.plan.leak.missing)
+    return _lacking(option.account.plan.leak.missing)
 
 
 def _of_tewi(name: str) -> Read:
@@ -371,16 +371,16 @@ def reason(measure: Measure, option: Prospect) -> str:
 def _missing(quantity: str) -> Why:
     if quantity == "energy":
         return lambda option: missing_words(option, quantity)  # a sentence by itself
-    return lambda option: _for_want_of(missing_words(option, quantity))
+    return lambda option: _lacking(missing_words(option, quantity))
 
 
-def _for_want_of(missing: str) -> str:
+def _lacking(missing: str) -> str:
     """Return what is missing as a reason; nothing if nothing is.
 
     Args:
         missing: What is missing, in words. [-]
     """
-    return f"for want of {missing}" if missing else ""
+    return f"missing: {missing}" if missing else ""
 
 
 def _number(value: FloatArray | float | None) -> float | None:
