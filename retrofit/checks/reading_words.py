@@ -17,7 +17,7 @@ NAMES = {
     Compared.COP: "COP on electrical power",
     Compared.CAPACITY: "cooling",
     Compared.HEAT_REJECTED: "heat rejected",
-    Compared.HEAT_BALANCE: "heat rejected, against cooling and power read",
+    Compared.HEAT_BALANCE: "heat balance, rejected against taken up",
 }
 WHY_NOT = {
     WhyNot.NOT_READ: "needs",
