@@ -12,7 +12,7 @@ from retrofit.case.law import Law
 from retrofit.checks import assess
 from retrofit.checks.room.check import FAMILIES, against_limit, room_verdict
 from retrofit.checks.room.working import Rule, Work
-from retrofit.study import compare
+from retrofit.study import Verdict, compare
 from retrofit.study.charge import CircuitCharge
 
 RULE = Rule("rcl", "Rule", "ASHRAE 15", "edition", "m = c V", ("m: [kg]",), "source", "read")
@@ -24,6 +24,9 @@ ROOM = {
     "location": "II",
     "below_ground": False,
     "comfort": False,
+    "emergency_exits": True,
+    "people": 2,
+    "refrigerated": False,
     "largest_circuit": "10 kg",
     "sealed": False,
 }
@@ -210,7 +213,7 @@ def test_a_charge_above_a_limit_is_a_stop_for_a_candidate(results):
     assert (candidate.room.verdict, finding.level) == ("above the limit", "stop")
     assert "6.38 kg" in finding.fact
     assert candidate.room.margin_kg < 0.0
-    assert candidate.verdict == "does not suit"
+    assert candidate.verdict == Verdict.NOT_SUITABLE
 
 
 def test_a_charge_above_a_limit_today_is_work_to_clear_up(results):
@@ -229,7 +232,7 @@ def test_a_missing_input_of_the_room_is_unknown_and_named(results, key):
 
     assert (candidate.room.verdict, finding.level) == ("unknown", "unknown")
     assert f"`{key}` in [room]" in finding.fact
-    assert candidate.verdict == "cannot be said"
+    assert candidate.verdict == Verdict.OPEN
 
 
 def test_a_charge_nobody_knows_is_unknown(results):
@@ -241,15 +244,16 @@ def test_a_charge_nobody_knows_is_unknown(results):
     assert "`largest_circuit` in [room], or `charge` in [plant]" in candidate.room.unknown_because
 
 
-def test_without_a_room_only_hazardous_candidates_are_asked(results):
-    """R513A (A1) gets no finding; R1234yf and R600a are unknown because they burn, and today's gets none."""
+def test_without_a_room_every_option_is_asked(results):
+    """Charge against room is decisive for each, class A1 and today's among them; a flammable one says that it is."""
     result = results(has_room=False)
 
     assert {entry.room.verdict for entry in result.entries} == {"unknown"}
-    assert [levels(entry, "room-charge") for entry in result.entries] == [[], [], *[["unknown"]] * 3]
+    assert [levels(entry, "room-charge") for entry in result.entries] == [["unknown"]] * 5
     (finding,) = [item for item in result.candidates[1].findings if item.code == "room-charge"]
     assert "flammable" in finding.fact
     assert "[room]" in finding.fact
+    assert {"room.volume", "room.location"} <= set(finding.missing)
 
 
 def test_an_unresolved_rcl_is_unknown_between_its_figures(results):
@@ -292,7 +296,7 @@ def test_a_step_between_flammable_refrigerants_is_work(case_of):
     """From R1234yf to R1234ze(E) both burn: not a stop by class, but work with reasons; the room is asked anew."""
     result = assess(compare(case_of("R1234yf", ["R1234ze(E)"])))
     (candidate,) = result.candidates
-    assert (levels(result.existing, "room-charge"), levels(candidate, "room-charge")) == ([], ["unknown"])
+    assert (levels(result.existing, "room-charge"), levels(candidate, "room-charge")) == (["unknown"], ["unknown"])
     (finding,) = [item for item in candidate.findings if item.code == "class-change"]
 
     assert finding.level == "work"
@@ -348,9 +352,43 @@ def test_the_stop_on_a_class_says_what_the_place_asks(results, jurisdiction, wor
     law = {} if jurisdiction is None else {"jurisdiction": jurisdiction}
     before = results()
     case = replace(before.case, law=Law.model_validate(law))
-    (stop,) = [
-        item for item in assess(replace(before, case=case)).candidates[1].findings if item.code == "safety-class"
-    ]
+    candidate = assess(replace(before, case=case)).candidates[1]
+    (stop,) = [item for item in candidate.findings if item.code == "safety-class"]
 
     assert stop.level == "stop"
-    assert all(part in stop.advice for part in ("whole system", "owner and authority", "name plate", words))
+    asked = " ".join((stop.advice, *(item.text for item in candidate.room.change.asked))).lower()
+    assert all(part.lower() in asked for part in ("whole system", "owner and", "authority", "name plate", words))
+
+
+@pytest.mark.parametrize(("jurisdiction", "family"), [("EU", "EN 378"), ("GB", "EN 378"), ("US", "ASHRAE 15")])
+def test_a_jurisdiction_takes_its_usual_rules_where_no_code_is_given(results, jurisdiction, family):
+    """EN 378 in Europe, ASHRAE 15 in the US; nothing is asked for the code then."""
+    before = results(None)
+    case = replace(before.case, law=Law.model_validate({"jurisdiction": jurisdiction}))
+    room = assess(replace(before, case=case)).candidates[0].room
+
+    assert room.code == family
+    assert {limit.code_family for limit in room.limits if limit.role == "limit"} == {family}
+
+
+@pytest.mark.parametrize("location", ["II", "III"])
+def test_conditions_are_work_for_a_candidate(results, location):
+    """R513A with few people or in a machinery room: no limit by EN 378, and what holds instead has to be shown."""
+    candidate = results("EN 378", access="c", location=location).candidates[0]
+    (finding,) = [item for item in candidate.findings if item.code == "room-conditions"]
+
+    assert (candidate.room.verdict, finding.level) == ("under conditions", "work")
+    assert candidate.room.conditions
+    assert (candidate.room.deciding, candidate.room.margin_kg) == (None, None)
+    assert levels(candidate, "room-charge") == []
+
+
+def test_keys_that_settle_an_open_limit_are_named(results):
+    """100 kg of R513A in 100 m3, access c, and nobody says whether there are exits: that key settles it."""
+    candidate = results("EN 378", access="c", location="I", emergency_exits=None, largest_circuit="100 kg").candidates[
+        0
+    ]
+    (finding,) = [item for item in candidate.findings if item.code == "room-charge"]
+
+    assert finding.level == "unknown"
+    assert finding.missing == ("room.emergency_exits",)
