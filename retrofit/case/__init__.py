@@ -6,9 +6,10 @@ Read one with `read_case`; every complaint arrives at once in a `CaseFileError`.
 from retrofit.case.compressor import Compressor, Polynomial
 from retrofit.case.emissions import EDITIONS, Emissions, GridYear, TopUp
 from retrofit.case.exchangers import Condenser, Evaporator, Exchanger
+from retrofit.case.jurisdictions import EU_MEMBERS, JURISDICTIONS, areas
 from retrofit.case.keys import meaning, quantity, sum_of_money
 from retrofit.case.laid import as_key, as_text, as_toml, as_value, laid_over
-from retrofit.case.law import EQUIPMENT, Law
+from retrofit.case.law import ARRANGEMENTS, EQUIPMENT, Law
 from retrofit.case.logo import Logo
 from retrofit.case.model import Case, Default
 from retrofit.case.money import Items, Money, Option, Options, Range
@@ -26,8 +27,11 @@ from retrofit.case.thresholds import Threshold, Thresholds
 from retrofit.case.year import Bin, Climate, Year
 
 __all__ = [
+    "ARRANGEMENTS",
     "EDITIONS",
     "EQUIPMENT",
+    "EU_MEMBERS",
+    "JURISDICTIONS",
     "SCHEMA_FILE",
     "Bin",
     "Case",
@@ -68,6 +72,7 @@ __all__ = [
     "TopUp",
     "Valve",
     "Year",
+    "areas",
     "as_key",
     "as_text",
     "as_toml",

@@ -108,6 +108,7 @@ match = "mean"                   # refrigerants are compared at equal mean (or d
 # voltage = "400 V"
 # phases = 3
 # power_factor = 0.85
+# calibrate = true               # take power read over modelled power as losses of motor and drive, for every option
 # evaporator_in = "2 degC"       # air, water or brine
 # evaporator_out = "-3 degC"
 # evaporator_flow = "8 kg/s"
@@ -170,6 +171,9 @@ match = "mean"                   # refrigerants are compared at equal mean (or d
 # location = "II"                # I occupied space, II compressor outside it, III machinery room or open air,
 #                                  IV ventilated enclosure
 # below_ground = false
+# emergency_exits = true         # whether the room has emergency exits
+# people = 4                     # most people in it at one time
+# refrigerated = false           # whether it only processes or stores goods under refrigeration
 # comfort = false                # whether the plant is for human comfort
 # ventilation = "natural"        # none, natural or mechanical
 # largest_circuit = "80 kg"      # charge of the largest independent circuit today
@@ -182,11 +186,16 @@ match = "mean"                   # refrigerants are compared at equal mean (or d
 # ventilation = "1.5 m3/s"       # air flow of the emergency ventilation
 
 # [law]                          # tables of law are data, not advice: check the current text
-# jurisdiction = "EU"            # a name that the tables of law use
+# jurisdiction = "EU"            # EU or a member such as DE, GB, NI, US, US-CA; else other
 # date_of_change = "2027-04-01"
 # remaining_life = "8 years"     # that the plant runs after the change
 #| end = "2035-03-31"            # or the day it stops, instead of the remaining life
 # equipment = "supermarket"      # kind of equipment, as the tables name it
+# arrangement = "multipack"      # self-contained, movable plug-in, single split, multi split, double duct,
+#                                  multipack (compressors in parallel) or built on site
+# rated_capacity = "120 kW"      # of new equipment; if left out the duty is taken
+# cascade_primary = false        # whether it is the primary circuit of a cascade
+# safety_exception = false       # whether safety at the site rules out what the limit leaves, with evidence
 # hermetically_sealed = false    # and labelled so
 # leak_detection_system = true
 # annual_leak_rate = "15 %"      # of the charge
@@ -257,12 +266,13 @@ match = "mean"                   # refrigerants are compared at equal mean (or d
 # tariff = 0.18                  # a kWh
 # demand_charge = 60             # a year, for each kW of peak power
 # discount_rate = "6 %"
+# new_plant_life = "15 years"    # for the residual value of a new plant, by straight line
 # refrigerant_price = {{R448A = [25, 30, 45], R404A = 90}}   # a kilogram
 # leak_check = 250               # one check
 # levy = 0                       # for each tonne of CO2 equivalent of refrigerant bought
 # yearly_service = 2000          # the same for every option
 
-# [money.change]                 # first cost of any change; what is left out is not counted
+# [money.change]                 # first cost of any change; write 0 for what costs nothing
 # recovery = 1500                # of the old charge, weighing and disposal
 # refrigerant = 3000             # or left out: charge times price
 # reclaim_credit = 0             # what the old charge brings
@@ -283,6 +293,9 @@ match = "mean"                   # refrigerants are compared at equal mean (or d
 # charge = "40 kg"
 # largest_circuit = "20 kg"      # of a new plant: what one leak can release
 # seasonal_cop = 3.1             # of a new plant, fans and pumps included
+# peak_power = "40 kW"           # beside seasonal_cop, for the demand charge
+# plant_life = "20 years"        # of this new plant
+#| residual_value = 40000        # at the end of the remaining life, in place of the straight line
 
 # [plus_minus]                   # how far inputs may be off, each under its full key
 # duty.evaporating = "1 K"

@@ -4,6 +4,8 @@ from __future__ import annotations
 
 from collections.abc import Callable, Sequence
 
+from retrofit.checks.readings import Outcome
+from retrofit.report.agreeing import agreements
 from retrofit.report.found import derived_text
 from retrofit.report.hardware import component_names, verdict_words
 from retrofit.report.plant import cooling_needed_text, has_plant, plant_reason, unmet_text
@@ -153,7 +155,29 @@ def baseline_text(comparison: Comparison, units: UnitSystem, columns: int, stron
         paragraph(f"{item.level:<9}{item.title}. {told(item.text, units)}", columns, indent=" " * 9, first="")
         for item in found.problems
     ]
+    lines += _agreement_lines(comparison, units, columns)
     if found.missing:
         count = len(found.missing)
         lines.append(paragraph(f"{count} more quantities need readings that are not there: see the report.", columns))
     return "\n".join(lines)
+
+
+def _agreement_lines(comparison: Comparison, units: UnitSystem, columns: int) -> list[str]:
+    """Return the readings beside the model, and what likely makes those differ that do."""
+    found = agreements(comparison, units)
+    lines = ["Readings against the model of today's plant at the same point:"] if found else []
+    for item in found:
+        if item.state == Outcome.NOT_COMPARABLE:
+            lines.append(f"{item.name}: {item.outcome}: {item.reason}.")
+        elif item.state != Outcome.NOT_READ:
+            causes = "; ".join(f"{cause} ({todo})" for cause, todo in item.causes)
+            likely = f". Likely causes: {causes}" if causes else ""
+            both = f"{item.read} read, {item.modelled} by the model, {item.difference}"
+            lines.append(f"{item.name}: {both}: {item.outcome}{likely}.")
+    absent = [
+        item.name if item.name[:2].isupper() else item.name[:1].lower() + item.name[1:]
+        for item in found
+        if item.state == Outcome.NOT_READ
+    ]
+    lines += [f"Not read: {'; '.join(absent)}."] if absent else []
+    return [paragraph(line, columns, indent="  ", first="  " if place else "") for place, line in enumerate(lines)]

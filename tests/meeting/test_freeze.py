@@ -312,3 +312,13 @@ def test_a_fault_while_writing_is_told(client, case_file, monkeypatch):
 
     assert "Not frozen: by a fault of the program" in broken
     assert "market-rev-a.html" in after
+
+
+def test_what_a_window_has_not_seen_is_not_frozen_by_it(client, case_file):
+    """Another window changed an input meanwhile: no revision is written, and the page names the change."""
+    seen = client.session.version
+    client.change(window="a", **{"in.duty.condensing": "45 degC"})
+    client.post(path="/freeze", seen=seen, window="b", what="agreed")
+
+    assert "Condensing: changed to 45 degC (was 42 degC) by another window meanwhile" in client.page()
+    assert [path.name for path in case_file.parent.iterdir()] == ["market.toml"]
