@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Mapping
 from dataclasses import dataclass
 from typing import Any, NamedTuple
@@ -62,6 +63,28 @@ class OneOf(FileValue):
     def json_schema(self) -> dict[str, Any]:
         """Return the list of numbers."""
         return {"enum": list(self.numbers)}
+
+
+@dataclass(frozen=True)
+class Level(FileValue):
+    """Where a check begins to speak: a bare number, or a number with its unit, kept as text."""
+
+    number = Number(-1e9, 1e9, "thresholds lie within it", example="0.95")
+    quantity = r"\s*[+\u2212-]?[0-9.]+([eE][+-]?[0-9]+)?\s*[^\s0-9.][^\x00-\x1f\x7f]{0,39}"
+
+    def sample(self) -> str:
+        """Return a number, as text."""
+        return self.number.sample()
+
+    def read(self, value: object, p_ambient_Pa: float | None = None) -> float | str:
+        """Return the number, or the text; whether it needs a unit, and which, the checks know."""
+        if isinstance(value, str) and value.isprintable() and re.fullmatch(self.quantity, value):
+            return value
+        return self.number.read(value)
+
+    def json_schema(self) -> dict[str, Any]:
+        """Return a number, or a number with a unit."""
+        return {"anyOf": [self.number.json_schema(), {"type": "string", "pattern": r"^\s*[+-]?[0-9.]+.*[^0-9\s]"}]}
 
 
 class EfficiencyPoint(NamedTuple):

@@ -290,6 +290,7 @@ match = "mean"                   # refrigerants are compared at equal mean (or d
 
 # [thresholds]                   # your own, instead of those that the checks come with
 # capacity = {{work = 1.0, stop = 0.9}}
+# discharge_temperature = {{work = "105 degC", stop = "115 degC"}}
 """
 
 

@@ -5,9 +5,11 @@ from __future__ import annotations
 import datetime
 from dataclasses import replace
 
+from retrofit.case import Case
 from retrofit.checks.gates import GATES
 from retrofit.checks.hardware import hardware_findings, hardware_rows
 from retrofit.checks.law import law_findings, with_law
+from retrofit.checks.law.reader import tables_for
 from retrofit.checks.room import room_check, room_findings
 from retrofit.checks.thresholds import thresholds_for
 from retrofit.study import Comparison, Entry, Finding
@@ -53,6 +55,18 @@ def assess(comparison: Comparison, on: datetime.date | None = None) -> Compariso
     existing = _assessed(comparison, comparison.existing)
     candidates = tuple(_assessed(comparison, entry) for entry in comparison.candidates)
     return replace(comparison, existing=existing, candidates=candidates)
+
+
+def require_usable(case: Case) -> None:
+    """Do nothing if `assess` can judge results of a case: its thresholds and the user's tables of law are right.
+
+    Args:
+        case: The case, as read.
+    Raises: CaseFileError as `assess` does, before anything is computed.
+    """
+    thresholds_for(case)
+    if case.law is not None and case.law.jurisdiction is not None:
+        tables_for(case.path)
 
 
 def _assessed(comparison: Comparison, entry: Entry) -> Entry:

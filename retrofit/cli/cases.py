@@ -8,7 +8,7 @@ from pathlib import Path
 import click
 
 from retrofit.cli.options import CASE
-from retrofit.cli.shell import fail, guarded
+from retrofit.cli.shell import fail, guarded, say_build
 
 
 @click.command()
@@ -34,11 +34,15 @@ def new(case_file: Path, force: bool) -> None:
 @click.argument("case_file", type=CASE, metavar="CASE")
 @guarded
 def check(case_file: Path) -> None:
-    """Read a CASE file and name every problem in it."""
+    """Read a CASE file and name every problem in it, and what is assumed where it says nothing."""
     from retrofit.case import read_case
+    from retrofit.checks import require_usable
+    from retrofit.study import case_as_taken
     from retrofit.units import shown
 
     case = read_case(case_file)
+    require_usable(case)
+    case = case_as_taken(case, say_build)
     click.echo(f"{shown(str(case_file), 500)}: can be used. Candidates: {', '.join(case.compare.candidates)}.")
     for default in case.defaults:
         click.echo(f"  assumed: {default.key} = {default.shown_text} ({default.why})")

@@ -77,6 +77,22 @@ def compare(case: Case, on_build: OnBuild | None = None) -> Comparison:
     )
 
 
+def case_as_taken(case: Case, on_build: OnBuild | None = None) -> Case:
+    """Return the case as `compare` takes it: with what its readings say in place of what it leaves out.
+
+    Args:
+        case: The case.
+        on_build: As for `compare`; only the tables of today's refrigerant are built, and only for readings.
+    Returns: The case; unchanged where today's refrigerant cannot be computed.
+    """
+    if case.readings is None:
+        return case
+    try:
+        return case_with_readings(case, baseline(case, fluid(case.plant.refrigerant, on_build)))
+    except RetrofitError:
+        return case
+
+
 def _candidate(
     today: Today | None,
     parts: hardware.Today | None,

@@ -586,7 +586,7 @@ def with_thresholds(comparison, **own):
 
 def test_a_threshold_of_the_case_goes_before_the_file(whole):
     """A discharge limit of 50 degC turns the row and the gate, and its source says who set it."""
-    mild = {"work": 40.0, "stop": 50.0}
+    mild = {"work": "40 degC", "stop": "50 degC"}
     comparison = with_thresholds(whole, discharge_temperature=mild)
     found = row(comparison, "discharge-temperature")
 
@@ -649,7 +649,8 @@ def test_every_row_listens_to_the_case(whole, name):
     }[name]
     figures = thresholds_for(whole.case)[name].figures
     below = name in ("suction_velocity_low", "riser_flow_reversal")
-    own = dict.fromkeys(figures, 1e6 if below else 1e-6)
+    figure = 1e6 if below else 1e-6
+    own = dict.fromkeys(figures, f"{figure:g} m/s" if name == "suction_velocity_low" else figure)
 
-    assert f"{own['work']:g}" in row(with_thresholds(whole, **{name: own}), code).threshold
+    assert f"{figure:g}" in row(with_thresholds(whole, **{name: own}), code).threshold
     assert row(with_thresholds(whole, **{name: own}), code).verdict in ("adjust", "replace")
