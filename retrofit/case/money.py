@@ -12,6 +12,7 @@ from retrofit.case.numbers import Number
 from retrofit.case.table import Table, key
 from retrofit.case.values import FileValue, Quantity, Text, designation_of
 from retrofit.errors import QuantityError
+from retrofit.refrigerants import with_hyphens
 from retrofit.units import described, quoted
 
 LARGEST_SUM = 1e12
@@ -73,7 +74,7 @@ class PricesValue(FileValue):
         for name, price in value.items():
             designation = designation_of(name)
             if designation in found:
-                raise QuantityError(f"{designation} is in the table twice; leave one out")
+                raise QuantityError(f"{with_hyphens(designation)} is in the table twice; leave one out")
             try:
                 found[designation] = self.price.read(price)
             except QuantityError as error:

@@ -9,6 +9,7 @@ from typing import Any, NamedTuple
 
 from retrofit.case.values import FileValue, designation_of, outside
 from retrofit.errors import QuantityError
+from retrofit.refrigerants import with_hyphens
 from retrofit.units import described, listed, quoted
 
 LARGEST_NUMBER = 1e15
@@ -156,7 +157,7 @@ class FilmFactorValue(FileValue):
         for name, factor in value.items():
             designation = designation_of(name)
             if designation in found:
-                raise QuantityError(f"{designation} is in the table twice; leave one out")
+                raise QuantityError(f"{with_hyphens(designation)} is in the table twice; leave one out")
             found[designation] = self._of_one(name, factor)
         return FilmFactors(by_refrigerant=tuple(found.items()))
 

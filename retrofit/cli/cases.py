@@ -37,12 +37,14 @@ def check(case_file: Path) -> None:
     """Read a CASE file and name every problem in it, and what is assumed where it says nothing."""
     from retrofit.case import read_case
     from retrofit.checks import require_usable
+    from retrofit.refrigerants import with_hyphens
     from retrofit.study import case_as_taken
     from retrofit.units import shown
 
     case = read_case(case_file)
     require_usable(case)
     case = case_as_taken(case, say_build)
-    click.echo(f"{shown(str(case_file), 500)}: can be used. Candidates: {', '.join(case.compare.candidates)}.")
+    candidates = with_hyphens(f"Candidates: {', '.join(case.compare.candidates)}.")
+    click.echo(f"{shown(str(case_file), 500)}: can be used. {candidates}")
     for default in case.defaults:
         click.echo(f"  assumed: {default.key} = {default.shown_text} ({default.why})")

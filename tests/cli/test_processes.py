@@ -61,7 +61,7 @@ def test_progress_goes_to_the_error_stream_and_results_alone_to_the_output(proce
     warm = process("compare", good, "--json", RETROFIT_STORE=str(store))
 
     assert (cold.returncode, warm.returncode, warm.stderr) == (0, 0, "")
-    assert [line.split(" of ")[1].split(",")[0] for line in cold.stderr.splitlines()] == ["R134a", "R513A", "R290"]
+    assert [line.split(" of ")[1].split(",")[0] for line in cold.stderr.splitlines()] == ["R-134a", "R-513A", "R-290"]
     assert json.loads(cold.stdout) == json.loads(warm.stdout)
     assert len(list(store.iterdir())) == 3
 
