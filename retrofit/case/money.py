@@ -118,6 +118,9 @@ class Option(Items):
     charge_kg: Annotated[
         float | None, Quantity("mass", "0 kg", "1000000 kg", "a plant that runs has one", above_low=True)
     ] = key("charge", "Charge of the plant with this option.", None)
+    largest_circuit_kg: Annotated[
+        float | None, Quantity("mass", "0 kg", "1000000 kg", "a plant that runs has one", above_low=True)
+    ] = key("largest_circuit", "Charge of the largest circuit of a new plant: what one leak can release.", None)
     seasonal_cop: Annotated[
         float | None, Number(0.2, 30, "seasonal figures of plants lie within it", example="3.1")
     ] = key("seasonal_cop", "Seasonal COP of a new plant, fans and pumps included, from its maker.", None)

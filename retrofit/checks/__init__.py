@@ -5,13 +5,12 @@ No check changes a number. A missing datum is a finding of level `unknown`, neve
 
 from retrofit.checks.advice import Advice, advice, deed
 from retrofit.checks.answer import Answer, Matter, answer
-from retrofit.checks.assess import LEVELS, VERDICTS, assess, require_usable, verdict
+from retrofit.checks.assess import LEVELS, assess, require_usable, verdict
 from retrofit.checks.limits import not_checked
 from retrofit.checks.thresholds import Threshold, threshold, thresholds_for
 
 __all__ = [
     "LEVELS",
-    "VERDICTS",
     "Advice",
     "Answer",
     "Matter",

@@ -12,19 +12,20 @@ from collections.abc import Iterable, Iterator, Sequence
 from dataclasses import dataclass
 
 from retrofit.case import Report
+from retrofit.checks.answer import open_words, question_of
 from retrofit.checks.gates import cooling_reached
-from retrofit.study import Comparison, Entry, Finding
+from retrofit.study import Comparison, Entry, Family, Finding, Verdict
 from retrofit.study.bands import model_band, pair_band
-from retrofit.units import UnitSystem, listed, told
+from retrofit.units import UnitSystem, told
 
 GRAVE = ("danger", "warning", "unknown")  # levels of cautions that page one names
-UNKNOWN_FAILS = "A component that is not known for lack of data turns out not to do"
+UNKNOWN_FAILS = "A component that could not be checked may prove unsuitable"
 NOTHING = Report.model_validate({})
 
 
 @dataclass(frozen=True)
 class Stopped:
-    """A refrigerant that a check stops: the first stop in the order in which options die, and how many more follow."""
+    """An option that is stopped or not computed: what comes first in checking, and how many stops follow."""
 
     entry: Entry
     deed: str
@@ -42,13 +43,13 @@ class Condition:
 
 
 DEEDS = {
-    "unknown": "Found out and judged before the change, since data is missing",
+    "unknown": "To be checked before the change",
     "replace": "Replaced",
     "adjust": "Adjusted or proved",
 }
 NEW_PLANT = Condition(
-    "Designed by its maker for its class",
-    "the numbers here are those of this plant with that refrigerant; a new plant is not computed",
+    "Designed by its maker for its refrigerant and class",
+    "here only its refrigerant at the same duty, charge, room, law and cost are judged",
 )
 
 
@@ -59,21 +60,24 @@ class Chosen:
     Attributes:
         entry: The refrigerant.
         deed: What is to be done, such as "Convert to R448A".
-        stopped: The check that stops it, None if none does.
+        stopped: The check that stops it, or that it is not computed; None if neither.
+        open_facts: Decisive facts that are missing, with the keys that settle them.
         conditions: What has to be settled, done or proved, from the checks; then the engineer's own.
     """
 
     entry: Entry
     deed: str
     stopped: Stopped | None
+    open_facts: tuple[str, ...]
     conditions: tuple[Condition, ...]
 
 
 @dataclass(frozen=True)
 class Weighed:
-    """A candidate that no check stops: what speaks for it, and what has to be settled or done."""
+    """An option that no check stops, keeping among them: what speaks for it, and what has to be settled or done."""
 
     entry: Entry
+    deed: str
     speaks_for: tuple[str, ...]
     to_settle: tuple[str, ...]
 
@@ -102,9 +106,9 @@ class Advice:
     Attributes:
         question: What has to be decided.
         recommended, fallback: The engineer's choice from the case; None if it names none.
-        weighed: Candidates that no check stops; empty if the case names a recommendation.
-        stopped: Every refrigerant that a check stops, today's included.
-        risks: What could go wrong with what is chosen, or with every candidate that no check stops.
+        weighed: Options that are computed and no check stops, keeping among them; empty if the case recommends one.
+        stopped: Every option that a check stops or that is not computed, keeping among them.
+        risks: What could go wrong with what is chosen, or with every option that no check stops.
         deadlines: Days that matter, in their order.
         asked: What the client is asked to do, in sentences.
     """
@@ -130,11 +134,11 @@ def advice(comparison: Comparison, units: UnitSystem) -> Advice:
     recommended = _chosen(comparison, report.recommended, report.conditions)
     fallback = _chosen(comparison, report.fallback, ())
     stops = tuple(stop for entry in comparison.entries if (stop := _stopped(comparison, entry)))
-    open_ = [entry for entry in comparison.candidates if not any(stop.entry is entry for stop in stops)]
+    open_ = [entry for entry in comparison.entries if entry.can_be_chosen]
     chosen = [choice.entry for choice in (recommended, fallback) if choice]
     looked_at = chosen or open_
     return Advice(
-        _question(comparison),
+        question_of(comparison),
         recommended,
         fallback,
         () if recommended else tuple(_weighed(comparison, entry, units) for entry in open_),
@@ -153,28 +157,15 @@ def deed(comparison: Comparison, entry: Entry) -> str:
         entry: One of its refrigerants.
     """
     name = entry.refrigerant.designation
-    if entry is comparison.existing:
-        return f"Keep {name}"
-    return f"Convert to {name}" if entry.family == "convert" else f"Replace the plant by a new one built for {name}"
-
-
-def _question(comparison: Comparison) -> str:
-    old = comparison.existing.refrigerant.designation
-    names = {
-        family: [entry.refrigerant.designation for entry in comparison.candidates if entry.family == family]
-        for family in ("convert", "replace")
-    }
-    parts = [f"keep {old}"]
-    if names["convert"]:
-        parts.append(f"convert the plant to {listed(names['convert'])}")
-    new = f" built for {listed(names['replace'])}" if names["replace"] else ""
-    parts.append(f"replace the plant by a new one{new}")
-    return f"The plant runs on {old}. What is to be done: {', '.join(parts[:-1])}, or {parts[-1]}?"
+    words = {Family.KEEP: f"Keep {name}", Family.CONVERT: f"Convert to {name}"}
+    return words.get(entry.family, f"Replace the plant by a new one built for {name}")
 
 
 def _stopped(comparison: Comparison, entry: Entry) -> Stopped | None:
-    stops = _at(entry, "stop")
-    return Stopped(entry, deed(comparison, entry), stops[0], len(stops) - 1) if stops else None
+    if entry.can_be_chosen:
+        return None
+    against = entry.stops or entry.open_facts[:1]
+    return Stopped(entry, deed(comparison, entry), against[0], len(against) - 1) if against else None
 
 
 def _chosen(comparison: Comparison, name: str | None, own: Sequence[str]) -> Chosen | None:
@@ -182,7 +173,8 @@ def _chosen(comparison: Comparison, name: str | None, own: Sequence[str]) -> Cho
     if entry is None:
         return None
     conditions = (*_conditions(entry), *(Condition(text, "", is_own=True) for text in own))
-    return Chosen(entry, deed(comparison, entry), _stopped(comparison, entry), conditions)
+    facts = tuple(open_words(item) for item in entry.open_facts) if entry.verdict == Verdict.OPEN else ()
+    return Chosen(entry, deed(comparison, entry), _stopped(comparison, entry), facts, conditions)
 
 
 # Conditions: what is not known first, then what has to be done
@@ -194,7 +186,7 @@ def _conditions(entry: Entry) -> Iterator[Condition]:
         yield Condition(f"Settled first: {_small(finding.title)}", brief(finding.fact))
     for finding in _work(entry):
         yield Condition(finding.title, brief(finding.fact))
-    if entry.family == "replace":
+    if entry.is_new_plant:
         yield NEW_PLANT
         return
     for verdict, words in DEEDS.items():
@@ -202,13 +194,14 @@ def _conditions(entry: Entry) -> Iterator[Condition]:
             yield Condition(words, "; ".join(names))
     for finding in entry.findings:
         if finding.code == "conversion":
-            yield Condition(finding.title, "with the findings; written approval of the compressor maker is part of it")
+            yield Condition(finding.title, "including the compressor maker's written approval")
 
 
 def _work(entry: Entry) -> list[Finding]:
     """Return what is to be done and is told neither by a component nor of every conversion."""
     components = {item.name for item in entry.hardware}
-    told = {item.code for item in entry.hardware if item.verdict in ("replace", "adjust")} | {"conversion"}
+    told = {item.code for item in entry.hardware if item.verdict in ("replace", "adjust")}
+    told |= {"conversion", "new-plant"}
     return [
         finding
         for finding in entry.findings
@@ -238,12 +231,14 @@ def brief(fact: str) -> str:
 
 
 def _weighed(comparison: Comparison, entry: Entry, units: UnitSystem) -> Weighed:
-    return Weighed(entry, tuple(_speaks_for(comparison, entry, units)), tuple(_to_settle(entry)))
+    speaks, settle = tuple(_speaks_for(comparison, entry, units)), tuple(_to_settle(entry))
+    return Weighed(entry, deed(comparison, entry), speaks, settle)
 
 
 def _speaks_for(comparison: Comparison, entry: Entry, units: UnitSystem) -> Iterator[str]:
     """Yield what is better than today, or as needed, beyond what the model cannot tell apart."""
-    if entry.status != "ok":
+    if entry is comparison.existing:
+        yield "no change of refrigerant, oil or components"
         return
     reached = cooling_reached(comparison, entry)
     band = {name: pair_band(comparison.existing, entry, name) for name in model_band()}
@@ -267,8 +262,9 @@ def _speaks_for(comparison: Comparison, entry: Entry, units: UnitSystem) -> Iter
 
 def _to_settle(entry: Entry) -> Iterator[str]:
     """Yield what is unknown by name, and how many components ask for something."""
-    for finding in _at(entry, "unknown"):
-        yield "not computed, so no check could stop it" if finding.code == "not-computed" else _small(finding.title)
+    yield from (f"open: {open_words(finding)}" for finding in entry.open_facts)
+    yield from (_small(finding.title) for finding in _at(entry, "unknown") if not finding.decisive)
+    yield from (_small(finding.title) for finding in _work(entry) if finding.code.startswith("law"))
     words = {"unknown": "not known for lack of data", "replace": "to replace", "adjust": "to adjust or prove"}
     counts = {verdict: len(_components(entry, verdict)) for verdict in words}
     parts = [f"{count} {words[verdict]}" for verdict, count in counts.items() if count]
@@ -344,7 +340,7 @@ def _asked(
     name = recommended.entry.refrigerant.designation if recommended else ""
     if recommended is None:
         yield f"Choose with the engineer{by}: this report names no recommendation"
-    elif recommended.entry.family == "replace":
+    elif recommended.entry.is_new_plant:
         yield f"Decide{by} on a new plant for {name}, and have it designed for the class of that refrigerant"
     elif recommended.stopped:
         yield f"Decide{by} whether what stops {name} can be resolved, or take another option"
@@ -355,7 +351,7 @@ def _asked(
         yield "Have the missing data found out: name plates, settings, drawings and materials of the plant"
     if any(entry is not comparison.existing for entry in entries):
         yield "Have the makers of compressors and equipment approve the refrigerant in writing, before gas is ordered"
-    if any(entry.family == "replace" for entry in entries) or comparison.law is None:
+    if any(entry.family == Family.REPLACE for entry in entries) or comparison.law is None:
         yield "Ask the authority what holds for this plant"
 
 

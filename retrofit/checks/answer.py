@@ -6,17 +6,20 @@ from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 
 from retrofit.checks.gates import capacity_needed_W
-from retrofit.study import Comparison, Entry
+from retrofit.refrigerants import change_cautions
+from retrofit.study import Comparison, Entry, Family, Finding, Verdict
 from retrofit.study.bands import groups_alike, on_the_plant, pair_band
 from retrofit.units import UnitSystem, listed
 
+# In the order of the headline: what may be done comes before what may not.
 VERDICT_WORDS = {
-    "suits": ("suits", "suit"),
-    "suits with work": ("suits with work", "suit with work"),
-    "cannot be said": ("cannot be judged with the data given",) * 2,
-    "does not suit": ("does not suit this plant", "do not suit this plant"),
-    "not computed": ("is not computed", "are not computed"),
+    Verdict.SUITABLE: ("is suitable", "are suitable"),
+    Verdict.MODIFICATIONS: ("is suitable with modifications", "are suitable with modifications"),
+    Verdict.OPEN: ("is open: decisive facts are missing", "are open: decisive facts are missing"),
+    Verdict.NOT_SUITABLE: ("is not suitable", "are not suitable"),
 }
+NOT_COMPUTED = ("is not computed", "are not computed")
+READ_FIRST = "Read the cautions and the open points before deciding."
 
 
 @dataclass(frozen=True)
@@ -69,45 +72,110 @@ def answer(comparison: Comparison, units: UnitSystem) -> Answer:
     Returns: Question, headline and sentences.
     """
     old = comparison.existing.refrigerant.designation
-    names = listed([entry.refrigerant.designation for entry in comparison.candidates])
-    question = f"The plant runs on {old}. Can it go on with {names} in the same compressors at the same temperatures?"
+    question = question_of(comparison)
     if comparison.existing.duty is None:
         headline = f"Nothing can be compared: {old}, the refrigerant in the plant, cannot be computed here."
-        return Answer(question, headline, (), (f"{comparison.existing.reason}.",))
+        return Answer(question, headline, _open(comparison), (f"{comparison.existing.reason}.",))
     solved = [entry for entry in comparison.candidates if entry.duty is not None]
-    matters = _matters(comparison, solved, units) if solved else ()
+    matters = (*_open(comparison), *(_matters(comparison, solved, units) if solved else ()))
     missing = [
-        f"{entry.refrigerant.designation} is not computed: {entry.reason}."
+        f"{entry.refrigerant.designation} is not computed, so it is not priced, ranked or recommended: {entry.reason}."
         for entry in comparison.candidates
         if entry.duty is None
     ]
     return Answer(question, _headline(comparison), matters, (*_class(comparison), *missing))
 
 
+def question_of(comparison: Comparison) -> str:
+    """Return the question that a case asks: keep, convert or replace.
+
+    Args:
+        comparison: A result.
+    """
+    old = comparison.existing.refrigerant.designation
+    parts = [f"keep {old}"]
+    for family, words in ((Family.CONVERT, "convert the plant to"), (Family.REPLACE, "replace it by a new one for")):
+        names = [entry.refrigerant.designation for entry in comparison.candidates if entry.family == family]
+        parts += [f"{words} {listed(names)}"] if names else []
+    return (
+        f"The plant runs on {old}. What is to be done: {', '.join(parts[:-1])}{' or ' * (len(parts) > 1)}{parts[-1]}?"
+    )
+
+
+def _open(comparison: Comparison) -> tuple[Matter, ...]:
+    """Return the decisive facts that are missing, each with the keys that settle it and the options it holds open."""
+    groups: dict[str, list[str]] = {}
+    for entry in comparison.entries:
+        if entry.verdict == Verdict.OPEN:
+            for words in dict.fromkeys(open_words(finding) for finding in entry.open_facts):
+                groups.setdefault(words, []).append(entry.refrigerant.designation)
+    if not groups:
+        return ()
+    return (Matter("Decisive facts missing", tuple((words, tuple(names)) for words, names in groups.items())),)
+
+
+def open_words(finding: Finding) -> str:
+    """Return a decisive fact that is missing in a few words, with the keys that settle it.
+
+    Args:
+        finding: A finding of level "unknown".
+    """
+    keys = f" ({', '.join(finding.missing)})" if finding.missing else ""
+    return f"{finding.title[:1].lower()}{finding.title[1:]}{keys}"
+
+
 def _matters(comparison: Comparison, solved: Sequence[Entry], units: UnitSystem) -> tuple[Matter, ...]:
+    here = [entry for entry in solved if entry.compressor is not None]  # a new plant is another machine
     found = (
-        _capacity(comparison, solved),
-        _installed(comparison, solved, units),
+        *((_capacity(comparison, here), _installed(comparison, here, units)) if here else ()),
         _discharge(comparison, solved, units),
         _pressure(comparison, solved, units),
         _cop(comparison, solved),
-        _among(solved),
-        _hardware(comparison, solved),
+        _among(here),
+        _hardware(comparison, here),
     )
     return tuple(matter for matter in found if matter.groups)
 
 
+def option_name(entry: Entry) -> str:
+    """Return an option in a few words: keep, convert to or a new plant for its refrigerant.
+
+    Args:
+        entry: The option.
+    """
+    name = entry.refrigerant.designation
+    if entry.family == Family.KEEP:
+        return f"keeping {name}"
+    return f"a new plant for {name}" if entry.is_new_plant else name
+
+
 def _headline(comparison: Comparison) -> str:
+    """Return the verdicts, keeping today's refrigerant among them; what is not computed stands apart."""
     parts = []
+    computed = [entry for entry in comparison.entries if entry.is_computed or entry.stops]
     for verdict, (one, several) in VERDICT_WORDS.items():
-        names = [
-            entry.refrigerant.designation
-            for entry in comparison.candidates
-            if verdict == (entry.verdict if entry.status == "ok" else "not computed")
-        ]
+        names = [option_name(entry) for entry in computed if entry.verdict == verdict]
         if names:
             parts.append(f"{listed(names, 'and')} {one if len(names) == 1 else several}")
-    return f"{'; '.join(parts)}. The cautions and the matters not checked here come before any decision."
+    if missing := [option_name(entry) for entry in comparison.entries if entry not in computed]:
+        parts.append(f"{listed(missing, 'and')} {NOT_COMPUTED[len(missing) > 1]}")
+    text = "; ".join(parts)
+    return " ".join((f"{text[:1].upper()}{text[1:]}.", *left_words(comparison), READ_FIRST))
+
+
+def left_words(comparison: Comparison) -> tuple[str, ...]:
+    """Return what is left where no conversion passes the checks: keep, replace, or nothing; nothing otherwise.
+
+    Args:
+        comparison: An assessed result.
+    """
+    conversions = [entry for entry in comparison.candidates if not entry.is_new_plant]
+    if not conversions or any(entry.can_be_chosen for entry in conversions):
+        return ()
+    left = [option_name(entry) for entry in comparison.entries if entry.can_be_chosen]
+    if not any(entry.is_new_plant for entry in comparison.entries if entry.can_be_chosen):
+        left.append("a new plant, which [options] can describe by new_plant and charge")
+    return (f"No conversion passes the checks. What is left: {listed(left)}.",)
 
 
 def _capacity(comparison: Comparison, solved: Sequence[Entry]) -> Matter:
@@ -293,13 +361,13 @@ def _class(comparison: Comparison) -> list[str]:
     names = [
         f"{entry.refrigerant.designation} ({entry.refrigerant.safety_class.text})"
         for entry in comparison.candidates
-        if entry.family == "replace"
+        if entry.family == Family.REPLACE and change_cautions(comparison.existing.refrigerant, entry.refrigerant)
     ]
     if not names:
         return []
-    verb = "is" if len(names) == 1 else "are"
+    verb = "has" if len(names) == 1 else "have"
     return [
-        f"{listed(names, 'and')} {verb} of a less mild safety class than the plant was built for ({old}): by default a "
+        f"{listed(names, 'and')} {verb} a more hazardous safety class than the plant was designed for ({old}): a "
         "new, purpose-built plant, not a conversion of this one."
     ]
 

@@ -3,28 +3,29 @@
 from __future__ import annotations
 
 import datetime
+from collections.abc import Sequence
 from dataclasses import replace
 
 from retrofit.case import Case
-from retrofit.checks.gates import GATES
+from retrofit.checks.gates import GATES, GATES_OF_NEW_PLANT
 from retrofit.checks.hardware import hardware_findings, hardware_rows
 from retrofit.checks.law import law_findings, with_law
 from retrofit.checks.law.reader import tables_for
 from retrofit.checks.room import room_check, room_findings
 from retrofit.checks.thresholds import thresholds_for
-from retrofit.study import Comparison, Entry, Finding
+from retrofit.study import Comparison, Entry, Finding, Level, Verdict
 
-LEVELS = ("stop", "unknown", "work", "note")
-VERDICTS = {"stop": "does not suit", "unknown": "cannot be said", "work": "suits with work"}
-SUITS = "suits"
-# The order in which options die in practice: what is asked first is told first. A code counts from its beginning.
+LEVELS = tuple(Level)
+# The order of checking: what rules options out first in practice comes first. A code counts from its beginning.
 ORDER = (
     "not-computed",
     "law",
     "ozone",
+    "pressure-class",
     "high-side",
     "standstill",
     "relief",
+    "hottest-day",
     "near-critical",
     "safety-class",
     "room",
@@ -70,7 +71,8 @@ def require_usable(case: Case) -> None:
 
 
 def _assessed(comparison: Comparison, entry: Entry) -> Entry:
-    found = [finding for gate in GATES for finding in gate(comparison, entry)]
+    gates = GATES_OF_NEW_PLANT if entry.is_new_plant else GATES
+    found = [finding for gate in gates for finding in gate(comparison, entry)]
     rows = hardware_rows(comparison, entry, found)
     found += hardware_findings(rows, entry is comparison.existing)
     found += law_findings(comparison, entry)
@@ -89,15 +91,20 @@ def _place(finding: Finding) -> tuple[int, int]:
 
 
 def _not_computed(entry: Entry) -> Finding:
-    return Finding("not-computed", "unknown", "Not computed", f"{entry.reason}.", "", "limits of this tool")
+    return Finding(
+        "not-computed", Level.UNKNOWN, "Not computed", f"{entry.reason}.", "", "limits of this tool", decisive=True
+    )
 
 
-def verdict(findings: list[Finding]) -> str:
-    """Return the verdict: a stop decides, then a missing datum, then work. Missing data is never good.
+def verdict(findings: Sequence[Finding]) -> Verdict:
+    """Return the verdict: a stop decides, then a decisive fact that is missing, then what is to be done.
 
     Args:
         findings: What the gates found.
-    Returns: "does not suit", "cannot be said", "suits with work" or "suits".
     """
     levels = {finding.level for finding in findings}
-    return next((word for level, word in VERDICTS.items() if level in levels), SUITS)
+    if Level.STOP in levels:
+        return Verdict.NOT_SUITABLE
+    if any(finding.level == Level.UNKNOWN and finding.decisive for finding in findings):
+        return Verdict.OPEN
+    return Verdict.MODIFICATIONS if levels & {Level.UNKNOWN, Level.WORK} else Verdict.SUITABLE

@@ -6,12 +6,12 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 
 from retrofit.checks.thresholds import thresholds_for
-from retrofit.study import Comparison, Entry
+from retrofit.study import Comparison, Entry, Verdict
 from retrofit.study.bands import QUANTITIES, bands_of
 from retrofit.study.changeover import Bands, Changeover, changeover
 
 MOST_CARDS = 3  # so that the report of a case with many candidates does not grow without bound
-BEST_FIRST = ("suits", "suits with work", "cannot be said", "does not suit", "")
+BEST_FIRST = (Verdict.SUITABLE, Verdict.MODIFICATIONS, Verdict.OPEN)
 
 
 @dataclass(frozen=True)
@@ -30,7 +30,7 @@ class Chosen:
 
 
 def chosen_for_cards(comparison: Comparison) -> Chosen:
-    """Return the candidates to write a job card for: the one recommended, or those that no stop stands against.
+    """Return the conversions to write a job card for: the one recommended, or those that can be chosen.
 
     Args:
         comparison: An assessed result.
@@ -38,29 +38,36 @@ def chosen_for_cards(comparison: Comparison) -> Chosen:
     report = comparison.case.report
     named = report.recommended if report else None
     if named:
-        found = [entry for entry in comparison.candidates if entry.refrigerant.designation == named]
-        why = f"The case recommends {named}" + ("." if found else ", which is no conversion to one of its candidates.")
+        found = [
+            entry for entry in comparison.candidates if entry.refrigerant.designation == named and not against(entry)
+        ]
+        why = f"The case recommends {named}" + ("." if found else ", for which no job card can be written.")
         return _chosen(comparison, found, why, "the case recommends another")
-    free = [entry for entry in comparison.candidates if not _against(entry)]
+    free = [entry for entry in comparison.candidates if not against(entry)]
     found = sorted(free, key=lambda entry: BEST_FIRST.index(entry.verdict))[:MOST_CARDS]
     why = (
-        f"The case recommends none, so there is one for each candidate that no stop stands against, {MOST_CARDS} at "
-        "most: by verdict, then in the order of the case."
+        f"The case recommends none, so there is one for each conversion that is computed and not stopped, {MOST_CARDS} "
+        "at most: by verdict, then in the order of the case."
     )
     return _chosen(comparison, found, why, f"beyond the {MOST_CARDS} shown")
 
 
 def _chosen(comparison: Comparison, found: Sequence[Entry], why: str, otherwise: str) -> Chosen:
     rest = (entry for entry in comparison.candidates if entry not in found)
-    return Chosen(tuple(found), why, tuple((entry, _against(entry) or otherwise) for entry in rest))
+    return Chosen(tuple(found), why, tuple((entry, against(entry) or otherwise) for entry in rest))
 
 
-def _against(entry: Entry) -> str:
-    """Return what stands against writing a job card for a candidate, nothing if nothing does."""
-    stops = [finding.title for finding in entry.findings if finding.level == "stop"]
-    if stops:
-        return f"stopped by: {'; '.join(stops)}"
-    return "" if entry.status == "ok" else f"not computed: {entry.reason}"
+def against(entry: Entry) -> str:
+    """Return what forbids a job card for a candidate: a stop, no numbers, or that it is a new plant; else nothing.
+
+    Args:
+        entry: An assessed candidate.
+    """
+    if entry.stops:
+        return f"stopped by: {'; '.join(finding.title for finding in entry.stops)}"
+    if not entry.is_computed:
+        return f"not computed: {entry.reason}"
+    return "a new plant: its maker writes its commissioning" if entry.is_new_plant else ""
 
 
 def changeover_of(comparison: Comparison, entry: Entry, T_inlet_today_K: float | None = None) -> Changeover:

@@ -8,10 +8,12 @@ from __future__ import annotations
 
 from collections.abc import Callable, Iterator
 
+from retrofit.checks.at_rest import relief, standstill
 from retrofit.checks.operating import (
     condenser,
     discharge_temperature,
     high_side,
+    hottest_day,
     limit_of,
     motor,
     near_critical,
@@ -19,8 +21,8 @@ from retrofit.checks.operating import (
     vacuum,
 )
 from retrofit.checks.room.change import asked_text
-from retrofit.refrigerants import parse_safety_class
-from retrofit.study import Comparison, Entry, Finding, Performance
+from retrofit.refrigerants import change_cautions, parse_safety_class
+from retrofit.study import Comparison, Entry, Family, Finding, Level, Performance
 from retrofit.study.bands import pair_band
 from retrofit.units import listed, quantity
 
@@ -63,7 +65,7 @@ def cooling_reached(comparison: Comparison, entry: Entry) -> tuple[float, float,
 
 
 def class_change(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
-    """Stop a candidate of a less mild safety class: by default that is a new plant, not a conversion."""
+    """Stop a conversion to a more hazardous safety class, or to pressures that the plant was not built for."""
     if entry is comparison.existing:
         return
     old, new = comparison.existing.refrigerant, entry.refrigerant
@@ -71,25 +73,55 @@ def class_change(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
     if None in classes:
         yield Finding(
             "safety-class",
-            "unknown",
+            Level.UNKNOWN,
             "Safety class not stated",
             f"The safety class of {old.designation} or {new.designation} is not stated, so the step from one to the "
             "other cannot be judged.",
             "Look it up in ASHRAE 34 or ISO 817 before anything else.",
             new.safety_class.source or NO_SOURCE,
+            decisive=True,
         )
-    elif entry.family == "replace":
+    elif change_cautions(old, new):
         law = comparison.case.law
         yield Finding(
             "safety-class",
-            "stop",
-            "Less mild safety class than the plant was built for",
-            f"class {new.safety_class.text}; the plant was built for {old.designation}, class {old.safety_class.text}.",
-            "That is not a conversion: the whole system would have to meet the standard for the new class, with owner "
-            "and authority informed and the name plate changed. Treat it as a new, purpose-built plant. "
+            Level.STOP,
+            "More hazardous safety class than the plant was designed for",
+            f"class {new.safety_class.text}; the plant was designed for {old.designation}, class "
+            f"{old.safety_class.text}.",
+            "Not a conversion: the whole system would have to meet the standard for the new class, with owner and "
+            "authority informed and the nameplate changed. Give `new_plant` and `charge` in "
+            f"[options.{new.designation}] to have it judged as a new plant. "
             f"{asked_text(law.jurisdiction if law else None)}",
             "ASHRAE 15 and EN 378 as summarised in trade guidance (from memory); equipment listings",
         )
+    elif entry.family == Family.REPLACE:
+        yield Finding(
+            "pressure-class",
+            Level.STOP,
+            "Pressures beyond what the plant was designed for",
+            f"{new.designation} needs a plant built for its pressures; this one was designed for {old.designation}.",
+            f"Not a conversion. Give `new_plant` and `charge` in [options.{new.designation}] to have it judged as a "
+            "new plant.",
+            "common practice: refrigerants that boil below -55 degC at 1 atm go into plants built for them",
+        )
+
+
+def new_plant(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
+    """Say what holds of every new plant: its makers design it, and only duty, charge, room and law are judged here."""
+    if not entry.is_new_plant:
+        return
+    yield Finding(
+        "new-plant",
+        Level.WORK,
+        "New plant to be designed for its refrigerant",
+        f"class {entry.refrigerant.safety_class.text or 'not stated'}.",
+        "Judged here: the refrigerant at the same duty, its charge against the room, and law for new equipment. The "
+        "maker of the plant answers for its pressures, materials, controls and protection.",
+        "ASHRAE 15, ISO 5149 and EN 378: a new system meets the standard for its refrigerant and charge",
+    )
+    if parse_safety_class(entry.refrigerant.safety_class.value) is None:
+        yield from class_change(comparison, entry)
 
 
 def capacity(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
@@ -179,6 +211,8 @@ def glide(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             f"{shown} of glide in the evaporator.",
             "In a flooded or pumped evaporator that rules a refrigerant out. Give `evaporator` in [plant].",
             flooded.source,
+            ("plant.evaporator",),
+            decisive=True,
         )
     elif (mild := high.level(found)) is not None:
         yield Finding(
@@ -207,6 +241,7 @@ def oil(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             f"usual {listed(families) if families else 'oil not stated'}; in the plant {here or 'not stated'}.",
             "Take a sample and ask the maker.",
             usual.source or NO_SOURCE,
+            ("plant.oil",) if families else (),
         )
     elif here not in families:
         yield Finding(
@@ -231,6 +266,7 @@ def model(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             f"{entry.grade.text[0].upper()}{entry.grade.text[1:]}.",
             "Get figures from the refrigerant's own tables.",
             "comparison with the catalogue's boiling points",
+            decisive=True,
         )
 
 
@@ -274,6 +310,9 @@ GATES: tuple[Gate, ...] = (
     class_change,
     ozone,
     high_side,
+    standstill,
+    relief,
+    hottest_day,
     near_critical,
     discharge_temperature,
     pressure_ratio,
@@ -287,3 +326,5 @@ GATES: tuple[Gate, ...] = (
     model,
     always_work,
 )
+# Of a new plant nothing of the existing machine counts.
+GATES_OF_NEW_PLANT: tuple[Gate, ...] = (new_plant, ozone, model)

@@ -9,7 +9,8 @@ from collections.abc import Iterator
 
 from retrofit.checks.corners import Corner, worst
 from retrofit.checks.thresholds import Threshold, thresholds_for
-from retrofit.study import Comparison, Entry, Finding
+from retrofit.study import AtRest, Comparison, Entry, Finding, Level
+from retrofit.study.hardware.conditions import hottest_day_keys, hottest_inlet_K
 from retrofit.units import quantity
 
 
@@ -69,23 +70,29 @@ def pressure_ratio(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
 
 
 def high_side(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
-    """Compare the condensing pressure with the nameplate of the high side."""
+    """Compare the condensing pressure with the nameplate of the high side, also where the cycle is not solved."""
     plant, limit = comparison.case.plant, limit_of(comparison, "high_side")
-    if entry.duty is None:
+    assert entry.at_rest is not None, "every entry of a comparison has one"
+    if entry.duty is None and entry.at_rest.can_condense is False:
+        yield _cannot_condense(entry.at_rest, limit)
         return
     if plant.high_side_limit_Pa is None:
         yield Finding(
             "high-side",
-            "unknown",
+            Level.UNKNOWN,
             "Nameplate pressure not given",
-            f"Condensing at {quantity('pressure', entry.duty.p_cond_Pa, '.1f')} cannot be compared with what the high "
-            "side is built for.",
+            "The condensing pressure cannot be compared with what the high side is built for.",
             "Give `high_side_limit` in [plant].",
             limit.source,
+            ("plant.high_side_limit",),
+            decisive=True,
         )
         return
+    corner = Corner(entry.at_rest.p_condensing_Pa, "") if entry.at_rest.p_condensing_Pa else None
+    corner = worst(entry, "p_cond_Pa") if entry.duty else corner
+    if corner is None:
+        return  # "not computed" is said once, and is decisive
     # Nameplates and switches count from the air around them.
-    corner = worst(entry, "p_cond_Pa")
     gauge = corner.value - plant.ambient_pressure_Pa
     name_plate = plant.high_side_limit_Pa - plant.ambient_pressure_Pa
     level = limit.level(gauge / name_plate)
@@ -100,6 +107,38 @@ def high_side(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             "Check switch, relief valve and vessel, and the hottest day if it is not given.",
             limit.source,
         )
+
+
+def _cannot_condense(rest: AtRest, limit: Threshold) -> Finding:
+    assert rest.T_critical_K is not None
+    return Finding(
+        "high-side",
+        Level.STOP,
+        "Does not condense in this plant",
+        f"critical temperature {quantity('temperature', rest.T_critical_K, '.0f')}, condensing at "
+        f"{quantity('temperature', rest.T_condensing_K, '.0f')} in the case.",
+        "Only a plant built for it can use this refrigerant.",
+        limit.source,
+    )
+
+
+def hottest_day(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
+    """Say where pressures on the hottest day are not known: no rating can be compared with them."""
+    numbers = entry.hardware_numbers
+    if numbers is None or numbers.new.hottest is not None:
+        return
+    keys, source = hottest_day_keys(comparison.case), limit_of(comparison, "high_side").source
+    is_water = not keys and hottest_inlet_K(comparison.case) is None
+    if not keys and not is_water and numbers.old.hottest is None:
+        return  # today's plant does not run on such a day either: the temperature holds at rest only
+    fact = "The condensing pressure on the hottest day is not known."
+    if keys:
+        advice = f"Give {', '.join(f'`{key}`' for key in keys)}."
+    elif is_water:
+        advice = "Give the highest temperature of the water at the condenser."
+    else:
+        advice = f"{numbers.new.missing['hottest'].capitalize()}."
+    yield Finding("hottest-day", Level.UNKNOWN, "Hottest day not computed", fact, advice, source, keys, decisive=True)
 
 
 def near_critical(comparison: Comparison, entry: Entry) -> Iterator[Finding]:

@@ -7,7 +7,7 @@ import re
 from collections.abc import Callable, Iterator, Sequence
 from dataclasses import dataclass
 
-from retrofit.checks.answer import Matter
+from retrofit.checks.answer import Matter, left_words, option_name
 from retrofit.checks.prospects import (
     FAR_FROM_METER,
     KEPT,
@@ -58,7 +58,7 @@ class Outlook:
         meter: The computed year against the meter; empty if the case has none.
         swing: What moves the answer most; empty without draws.
         ranking: Which option comes first under even weights, sentence by sentence.
-        stopped: Which options a check stops, whatever their numbers here; empty if none.
+        stopped: Which options a check stops or are not computed, whatever their numbers here; empty if none.
         absent: Which tables the case would need for what is not computed at all; empty if it has them.
     """
 
@@ -93,7 +93,7 @@ def outlook(comparison: Comparison, units: UnitSystem) -> Outlook:
         certainty=_there(_certainty(comparison, options)),
         meter=meter_words(comparison, units),
         swing=swing_words(comparison, units),
-        ranking=ranking_words(ranked(comparison)),
+        ranking=ranking_words(comparison, ranked(comparison)),
         stopped=_stopped(comparison),
         absent=_absent(comparison),
     )
@@ -119,13 +119,16 @@ def _stopped(comparison: Comparison) -> str:
     """Return which options a check stops: their numbers stand beside the others' all the same."""
     found: dict[str, list[str]] = {}
     for entry in comparison.entries:
-        stops = [finding.title for finding in entry.findings if finding.level == "stop"]
-        if stops:
-            found.setdefault(stops[0], []).append(entry.refrigerant.designation)
-    if not found:
-        return ""
-    told = "; ".join(f"{listed(names, 'and')} ({title})" for title, names in found.items())
-    return f"A check stops {told}: what stands here for them is no proposal, whatever the numbers."
+        if entry.stops:
+            found.setdefault(entry.stops[0].title, []).append(entry.refrigerant.designation)
+    sentences = []
+    if found:
+        told = "; ".join(f"{listed(names, 'and')} ({title})" for title, names in found.items())
+        sentences.append(f"Stopped: {told}. Figures for information only; not proposed.")
+    if missing := [entry.refrigerant.designation for entry in comparison.candidates if not entry.is_computed]:
+        are = "are" if len(missing) > 1 else "is"
+        sentences.append(f"{listed(missing, 'and')} {are} not computed, and so not priced or ranked.")
+    return " ".join(sentences)
 
 
 # Numbers as words
@@ -462,25 +465,47 @@ def input_words(swing: Swing) -> str:
 # Which comes first
 
 
-def ranking_words(found: Ranked) -> tuple[str, ...]:
+def ranking_words(comparison: Comparison, found: Ranked) -> tuple[str, ...]:
     """Return which option comes first under even weights, how stable that is, and what would change it.
 
     Args:
+        comparison: An assessed result.
         found: The options in order.
     """
     if found.stability is None:
-        return ("No option can be ranked: a gate stops each, or none of the criteria is known.",)
+        return ("No option can be ranked: each is stopped or not computed, or no criterion is known.",)
+    names = {entry.refrigerant.designation: option_name(entry) for entry in comparison.entries}
+    left = left_words(comparison)
     if len(found.scores.names) == 1:
-        return (f"Only {found.scores.names[0]} can be ranked.", *_gates(found))
+        only = f"Only {names[found.scores.names[0]]} can be ranked."
+        return (only, *left, *ban_words(comparison, found.scores.names), *_gates(found))
     first = [name for name, place in zip(found.order.names, found.order.places, strict=True) if place == 1]
     tie = ", no meaningful difference among them" if len(first) > 1 else ""
-    sentences = [f"With even weights {listed(first, 'and')} come{'' if tie else 's'} first{tie}."]
+    told = listed([names[name] for name in first], "and")
+    sentences = [f"With even weights {told} come{'' if tie else 's'} first{tie}."]
+    sentences += [*ban_words(comparison, first), *left]
     sentences.append(stability_words(found.scores, found.stability))
     if found.flip is not None:
         sentences.append(found.flip.words)
     else:
         sentences.append("No change of a single weight puts another option first by more than the band.")
     return (*sentences, *_gates(found))
+
+
+def ban_words(comparison: Comparison, first: Sequence[str]) -> tuple[str, ...]:
+    """Return what law ends within the remaining life for the options that come first, so that none does in silence.
+
+    Args:
+        comparison: An assessed result.
+        first: Designations of the options that come first. [-]
+    """
+    return tuple(
+        f"But {option_name(entry)}: {finding.title[:1].lower()}{finding.title[1:]}. {finding.fact}"
+        for entry in comparison.entries
+        if entry.refrigerant.designation in first
+        for finding in entry.findings
+        if finding.code == "law-ban"
+    )
 
 
 def _gates(found: Ranked) -> tuple[str, ...]:
@@ -523,7 +548,7 @@ def _named(comparison: Comparison, options: Sequence[Prospect]) -> list[Prospect
     if chosen:
         named = [option for option in options if option.entry.refrigerant.designation in chosen]
         return sorted(named, key=lambda option: chosen.index(option.entry.refrigerant.designation))
-    open_ = [option for option in options if not any(finding.level == "stop" for finding in option.entry.findings)]
+    open_ = [option for option in options if option.entry.can_be_chosen]
     return (open_ or list(options))[:MOST_ON_PAGE_ONE]
 
 

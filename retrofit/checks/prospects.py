@@ -80,6 +80,8 @@ def life_of_result(comparison: Comparison) -> Life:
 def prospects(comparison: Comparison) -> tuple[Prospect, ...]:
     """Return every option: the plant as it is, keeping it with its repairs if the case has that, and the candidates.
 
+    A candidate that is not computed is not an option: it is neither priced nor ranked.
+
     Args:
         comparison: A result with its remaining life.
     """
@@ -89,7 +91,7 @@ def prospects(comparison: Comparison) -> tuple[Prospect, ...]:
     found = [_prospect(comparison, comparison.existing, today, *as_is)]
     for entry in comparison.entries:
         name = entry.refrigerant.designation
-        if entry is comparison.existing and today not in options:
+        if (entry is comparison.existing and today not in options) or name not in life.accounts.options:
             continue
         label = f"{name} kept" if entry is comparison.existing else name
         both = life.accounts.options[name], life.three.options[name]

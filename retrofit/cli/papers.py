@@ -110,6 +110,9 @@ def _write_case(kept: Carried, case_file: Path, force: bool) -> None:
 @click.argument("refrigerant", metavar="REFRIGERANT")
 @click.option("-o", "--output", type=CASE, help="File to write; the case's name and the refrigerant if left out.")
 @click.option("--inlet", metavar="TEMPERATURE", help='Air or water at the condenser on the day, such as "27 degC".')
+@click.option(
+    "--despite", metavar="REASON", help="Write them for a refrigerant that a check stops; the REASON stands on top."
+)
 @units_option
 @click.option("--templates", type=CASE, help="Folder of your own templates, laid over the built-in ones.")
 @on_option
@@ -119,11 +122,15 @@ def commission(
     refrigerant: str,
     output: Path | None,
     inlet: str | None,
+    despite: str | None,
     units: str,
     templates: Path | None,
     on: datetime | None,
 ) -> None:
-    """Write job card and commissioning sheet of the change of a CASE to one REFRIGERANT as one HTML file."""
+    """Write job card and commissioning sheet of the change of a CASE to one REFRIGERANT as one HTML file.
+
+    A refrigerant that a check stops, that is not computed or that is a new plant is refused.
+    """
     from retrofit.case.exchangers import INLET
     from retrofit.refrigerants import find
     from retrofit.report import render_site_copy, write_report
@@ -137,6 +144,7 @@ def commission(
         templates,
         made_at=datetime.now().astimezone(),
         T_inlet_today_K=T_inlet_K,
+        despite=despite,
     )
     path = output or Path(f"{case_file.stem}-{name}.html")
     write_report(path, html)

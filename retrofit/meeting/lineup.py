@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Mapping
+from collections.abc import Iterable, Iterator, Mapping
 from dataclasses import dataclass, replace
 
 from retrofit.checks.prospects import prospects
@@ -11,7 +11,7 @@ from retrofit.meeting.how import slug
 from retrofit.meeting.state import State
 from retrofit.report.judging import Judged, deciding
 from retrofit.report.table import Cell, Note, Notes, Row, Table
-from retrofit.study import Comparison, Entry
+from retrofit.study import Comparison, Entry, Verdict
 from retrofit.units import MISSING, listed
 
 FOLLOWS = Cell("…", is_number=True)
@@ -151,11 +151,11 @@ def lineup(
 
 def _is_work(entry: Entry) -> bool:
     """Say whether it is work that decides: what stops a candidate or is unknown is told at the candidate itself."""
-    return entry.verdict == "suits with work"
+    return entry.verdict == Verdict.MODIFICATIONS
 
 
 def _common(view: Comparison) -> tuple[str, ...]:
-    """Return what every candidate that suits with work needs, if there are several of them."""
+    """Return what every candidate that is suitable with modifications needs, if there are several of them."""
     needed = [deciding(entry) for entry in view.candidates if _is_work(entry)]
     return tuple(title for title in needed[0] if all(title in other for other in needed)) if len(needed) > 1 else ()
 
@@ -182,8 +182,8 @@ def _columns(
         row = _row(table, headline.rows)
         if row is None:
             continue
-        chosen = range(len(view.entries)) if headline.table == "comparison" else places
-        cells = tuple(_renoted(row.cells[place], table, notes) for place in chosen)
+        chosen: Iterable[int | None] = range(len(view.entries)) if headline.table == "comparison" else places
+        cells = tuple(Cell(MISSING) if place is None else _renoted(row.cells[place], table, notes) for place in chosen)
         yield _Column(headline.label, f"{row.unit} {headline.per}".strip(), cells)
 
 
@@ -192,14 +192,17 @@ def _row(table: Table, names: tuple[str, ...]) -> Row | None:
     return next((rows[name] for name in names if name in rows), None)
 
 
-def _option_places(view: Comparison) -> tuple[int, ...]:
-    """Return the column of each refrigerant in the tables of the remaining life; of today's, the plant as it is."""
+def _option_places(view: Comparison) -> tuple[int | None, ...]:
+    """Return the column of each refrigerant in the tables of the remaining life; of today's, the plant as it is.
+
+    One that is not computed is not in them.
+    """
     if view.life is None:
         return ()
     columns: dict[str, int] = {}
     for place, option in enumerate(prospects(view)):
         columns.setdefault(option.entry.refrigerant.designation, place)
-    return tuple(columns[entry.refrigerant.designation] for entry in view.entries)
+    return tuple(columns.get(entry.refrigerant.designation) for entry in view.entries)
 
 
 def _renoted(cell: Cell, table: Table, notes: Notes) -> Cell:

@@ -5,6 +5,8 @@ from __future__ import annotations
 from collections.abc import Mapping
 from dataclasses import dataclass
 
+from retrofit.checks.answer import left_words
+from retrofit.checks.outlook import ban_words
 from retrofit.meeting.state import State
 from retrofit.report.judging import spelled
 from retrofit.study import Comparison
@@ -106,7 +108,9 @@ def weighing(view: Comparison, state: State) -> Weighing:
         columns=scores.criteria,
         ranked=_ranked(scores, found, names, stabilities),
         gated=tuple((names[name], spelled(why)) for name, why in scores.not_ranked.items()),
-        remarks=tuple(spelled(text) for text in _remarks(scores, found, weights, stabilities)),
+        remarks=tuple(
+            spelled(text) for text in (*_first_words(view, found), *_remarks(scores, found, weights, stabilities))
+        ),
         scale=SCALE,
     )
 
@@ -121,6 +125,12 @@ def _ranked(scores: Scores, found: Order, names: Mapping[str, str], stabilities:
         return Ranked(f"{place}{shared}", names[name], f"{total:.2f}", round(100 * total), texts, firsts)
 
     return tuple(row(*item) for item in zip(found.places, found.names, found.totals, strict=True))
+
+
+def _first_words(view: Comparison, found: Order) -> tuple[str, ...]:
+    """Return what has to be said of the options that come first, and what is left where nothing converts."""
+    first = [name for name, place in zip(found.names, found.places, strict=True) if place == 1]
+    return (*ban_words(view, first), *left_words(view))
 
 
 def _remarks(scores: Scores, found: Order, weights: Mapping[str, float], stabilities: list[Stability]) -> list[str]:

@@ -27,10 +27,12 @@ NO_CHOICE = "The case names no recommendation, and this tool makes none: the eng
 
 @dataclass(frozen=True)
 class Choice:
-    """A recommendation or fallback as texts; `stopped` is empty if no check stops it."""
+    """A recommendation or fallback as texts; `stopped` and `open_facts` are empty if nothing stops it or is open."""
 
     deed: str
+    verdict: str
     stopped: str
+    open_facts: tuple[str, ...]
     conditions: tuple[tuple[str, str], ...]
     own: tuple[str, ...]
 
@@ -69,7 +71,7 @@ class Front:
         whose: Labels and values of the strip on page one; empty if the case has no [report].
         question: What has to be decided.
         recommended, fallback: What the case names, None if it names none.
-        weighed: Candidates that no check stops: name, what speaks for each, what to settle.
+        weighed: Options that no check stops: what is done, what speaks for each, what to settle.
         no_choice: What is said in place of a recommendation.
         costs: What the change costs and saves.
         risks: What could go wrong, with the refrigerants it is true of.
@@ -186,7 +188,8 @@ def _choice(chosen: Chosen | None) -> Choice | None:
         return None
     found = tuple(_condition(item) for item in chosen.conditions if not item.is_own)
     own = tuple(plain(item.about) for item in chosen.conditions if item.is_own)
-    return Choice(spelled(chosen.deed), _stop_text(chosen.stopped), found, own)
+    facts = tuple(spelled(text) for text in chosen.open_facts)
+    return Choice(spelled(chosen.deed), chosen.entry.verdict, _stop_text(chosen.stopped), facts, found, own)
 
 
 def _condition(item: Condition) -> tuple[str, str]:
@@ -204,12 +207,12 @@ def _stop_text(stopped: Stopped | None) -> str:
 def _no_choice(found: Advice) -> str:
     if found.recommended:
         return ""
-    return f"{NO_CHOICE} {'No check stops these:' if found.weighed else 'A check stops every candidate.'}"
+    return f"{NO_CHOICE} {'No check stops these:' if found.weighed else 'A check stops every option.'}"
 
 
 def _weighed(item: Weighed) -> tuple[str, str, str]:
-    speaks = "; ".join(item.speaks_for) or "nothing beyond what the model can tell apart from today"
-    return item.entry.refrigerant.display_name, spelled(speaks), spelled("; ".join(item.to_settle) or "nothing found")
+    speaks = "; ".join(item.speaks_for) or "no significant advantage"
+    return spelled(item.deed), spelled(speaks), spelled("; ".join(item.to_settle) or "nothing found")
 
 
 def _options(comparison: Comparison) -> tuple[Option, ...]:

@@ -47,6 +47,7 @@ def render_site_copy(
     *,
     made_at: datetime,
     T_inlet_today_K: float | None = None,
+    despite: str | None = None,
 ) -> str:
     """Return job card and commissioning sheet of one candidate as one HTML page that loads nothing.
 
@@ -57,8 +58,10 @@ def render_site_copy(
         template_folder: The reader's own templates, laid over those of the package; None for none. [-]
         made_at: The time to print. [-]
         T_inlet_today_K: Temperature at the inlet of the condenser on the day, None if not known. [K]
+        despite: Reason to write it although a check stops the candidate or it is not computed; None for none. [-]
     Returns: The page. [-]
-    Raises: UnknownRefrigerantError; ReportError for a refrigerant that is no candidate, or as `render_html`.
+    Raises: UnknownRefrigerantError; ReportError for a refrigerant that is not a candidate, that is stopped, not
+        computed or a new plant, or as `render_html`.
     """
     from retrofit.report.guard import check_page
     from retrofit.report.site_copy import build_site_copy, candidate_named
@@ -66,7 +69,7 @@ def render_site_copy(
     from retrofit.units import UNIT_SYSTEMS, told
 
     entry = candidate_named(comparison, refrigerant)
-    page = build_site_copy(comparison, entry, UNIT_SYSTEMS[units], made_at, T_inlet_today_K)
+    page = build_site_copy(comparison, entry, UNIT_SYSTEMS[units], made_at, T_inlet_today_K, despite)
     cautions = render_cautions(page)
     html = told(render_page(page, cautions, template_folder), UNIT_SYSTEMS[units])
     check_page(html, page, cautions)

@@ -7,14 +7,14 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 
 from retrofit.refrigerants import source, with_hyphens
-from retrofit.study import Comparison, Entry, Finding
+from retrofit.study import Comparison, Entry, Family, Finding, Level
 from retrofit.units import listed
 
 LEVEL_WORDS = {"stop": "Stop", "work": "Work", "unknown": "Unknown", "note": "Note"}
 FAMILY_WORDS = {
-    "keep": "in the plant today",
-    "convert": "conversion of this plant",
-    "replace": "by default a new plant, built for its class",
+    Family.KEEP: "in the plant today",
+    Family.CONVERT: "conversion of this plant",
+    Family.REPLACE: "a new plant, built for its class and pressures",
 }
 SHARED_BY = 3  # refrigerants with the same advice: it is then written once, except about a stop
 
@@ -155,8 +155,12 @@ def deciding(entry: Entry) -> tuple[str, ...]:
     Args:
         entry: An assessed refrigerant.
     """
-    for level in ("stop", "unknown", "work"):
-        titles = dict.fromkeys(spelled(finding.title) for finding in entry.findings if finding.level == level)
-        if titles:
+    groups = (entry.stops, entry.open_facts, *(_at(entry, level) for level in (Level.UNKNOWN, Level.WORK)))
+    for found in groups:
+        if titles := dict.fromkeys(spelled(finding.title) for finding in found):
             return tuple(titles)
     return ("nothing found by the checks made here",)
+
+
+def _at(entry: Entry, level: Level) -> tuple[Finding, ...]:
+    return tuple(finding for finding in entry.findings if finding.level == level)

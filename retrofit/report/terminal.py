@@ -160,6 +160,7 @@ def _compressor(comparison: Comparison, solved: Sequence[Entry], units: UnitSyst
         Column("Cooling vs", "today"),
         Column("Power vs", "today"),
     ]
+    solved = [entry for entry in solved if entry.compressor is not None]
     cells = [units.column(kind, [getattr(entry.compressor, name) for entry in solved]) for _, kind, name in kinds]
     ratios = [[change_cell(entry, comparison.existing, name) for entry in solved] for name in ("capacity", "power")]
     rows = [list(row) for row in zip(row_names(solved), *cells, *ratios, strict=True)]

@@ -2,6 +2,7 @@
 
 from retrofit.study.compare import case_as_taken, compare
 from retrofit.study.result import (
+    AtRest,
     Baseline,
     ChartLines,
     Comparison,
@@ -16,8 +17,10 @@ from retrofit.study.result import (
     Performance,
     Point,
 )
+from retrofit.study.states import Family, Level, RestState, Verdict
 
 __all__ = [
+    "AtRest",
     "Baseline",
     "ChartLines",
     "Comparison",
@@ -25,12 +28,16 @@ __all__ = [
     "Derived",
     "EnthalpyZero",
     "Entry",
+    "Family",
     "Finding",
     "Installed",
+    "Level",
     "Measure",
     "Operation",
     "Performance",
     "Point",
+    "RestState",
+    "Verdict",
     "case_as_taken",
     "compare",
 ]

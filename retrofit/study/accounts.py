@@ -40,7 +40,8 @@ class Accounts:
 
     Attributes:
         as_is: The plant of today, going on as it is: what savings and CO2e avoided are counted against.
-        options: Every option by designation; that of today's refrigerant is keeping the plant with its repairs.
+        options: Every computed option by designation; that of today's refrigerant is keeping the plant with its
+            repairs. What is not computed is not priced.
     """
 
     as_is: Account
@@ -63,6 +64,8 @@ def accounts(
     as_is = _account(comparison, today, None, today, uses, pick, on)
     options = {}
     for entry in comparison.entries:
+        if not entry.is_computed and entry is not existing:
+            continue
         plan = plan_for(comparison.case, entry, existing)
         options[entry.refrigerant.designation] = _account(comparison, plan, as_is, today, uses, pick, on)
     return Accounts(as_is, options)

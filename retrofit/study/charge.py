@@ -4,11 +4,12 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from retrofit.case import Case
+from retrofit.case import Case, Option
 from retrofit.equipment.vessels import charge_estimate
 from retrofit.study.result import Entry
 
 _PLANT = "whole plant"
+LARGEST_CIRCUIT = "largest circuit"
 
 
 @dataclass(frozen=True)
@@ -35,13 +36,30 @@ def circuit_charge(case: Case, entry: Entry, existing: Entry) -> CircuitCharge:
         case: The case.
         entry: The refrigerant.
         existing: The refrigerant in the plant, whose charge is taken as given, without a range.
+    Returns: Of a new plant its own charge, never one estimated from the existing plant.
     Source: the same volume of liquid, m_new = m_old rho_new / rho_old (`charge_estimate`).
     """
+    option = option_of(case, entry)
+    if entry.is_new_plant:
+        own = option.largest_circuit_kg if option else None
+        return plant_charge(case, entry, existing) if own is None else CircuitCharge(own, own, own, LARGEST_CIRCUIT)
     circuit = case.room.largest_circuit_kg if case.room else None
-    today, of = (case.plant.charge_kg, _PLANT) if circuit is None else (circuit, "largest circuit")
-    if today is None:
+    if circuit is not None:
+        return _with(entry, existing, circuit, LARGEST_CIRCUIT)
+    found = plant_charge(case, entry, existing)
+    if found.expected_kg is None and case.plant.charge_kg is None:
         return CircuitCharge(None, None, None, "", "`largest_circuit` in [room], or `charge` in [plant]")
-    return _with(entry, existing, today, of)
+    return found
+
+
+def option_of(case: Case, entry: Entry) -> Option | None:
+    """Return what the case says of an option, None if nothing.
+
+    Args:
+        case: The case.
+        entry: The option.
+    """
+    return case.options.by_refrigerant.get(entry.refrigerant.designation) if case.options else None
 
 
 def plant_charge(case: Case, entry: Entry, existing: Entry) -> CircuitCharge:
@@ -51,12 +69,15 @@ def plant_charge(case: Case, entry: Entry, existing: Entry) -> CircuitCharge:
         case: The case.
         entry: The option.
         existing: The refrigerant in the plant.
-    Returns: The charge that the option gives; else today's; else an estimate from today's.
+    Returns: The charge that the option gives; else, unless it is a new plant, today's or an estimate from today's.
     Source: the same volume of liquid, m_new = m_old rho_new / rho_old (`charge_estimate`).
     """
-    option = case.options.by_refrigerant.get(entry.refrigerant.designation) if case.options else None
+    option = option_of(case, entry)
     if option and option.charge_kg is not None:
         return CircuitCharge(option.charge_kg, option.charge_kg, option.charge_kg, _PLANT)
+    if entry.is_new_plant:
+        reason = f"`charge` in [options.{entry.refrigerant.designation}]: the charge of the new plant"
+        return CircuitCharge(None, None, None, _PLANT, reason)
     if case.plant.charge_kg is None:
         return CircuitCharge(None, None, None, "", "`charge` in [plant]")
     return _with(entry, existing, case.plant.charge_kg, _PLANT)

@@ -15,12 +15,14 @@ from retrofit.errors import NoSolutionError, RetrofitError
 from retrofit.properties import Fluid, fluid, grade
 from retrofit.refrigerants import Refrigerant, cautions_for, change_cautions, find
 from retrofit.study.baseline import baseline, case_with_readings
+from retrofit.study.families import family_of, is_new_plant
 from retrofit.study.hardware import run as hardware
-from retrofit.study.hardware.conditions import hottest_inlet_K
+from retrofit.study.hardware.conditions import at_rest, hottest_inlet_K
 from retrofit.study.installed import run_installed
 from retrofit.study.lines import chart_lines
 from retrofit.study.performance import as_numbers, at_swept_volume, performance
 from retrofit.study.result import Baseline, Comparison, Entry, Installed, Point
+from retrofit.study.states import Family
 from retrofit.study.today import Today, today_of
 
 # Ratios to the existing refrigerant: name, basis, quantity of the performance.
@@ -39,6 +41,8 @@ RATIOS = (
     ("p_cond", "duty", "p_cond_Pa"),
     ("pressure_ratio", "duty", "pressure_ratio"),
 )
+OF_MACHINE = "compressor"  # a basis that a new plant does not have
+NEW_PLANT = "a new plant is sized for the duty, and is not computed on the existing machine"
 OnBuild = Callable[[str], None]
 
 
@@ -51,12 +55,15 @@ def compare(case: Case, on_build: OnBuild | None = None) -> Comparison:
     Returns: The comparison; a refrigerant that cannot be computed is an entry with its reason.
     """
     refrigerant = find(case.plant.refrigerant)
-    existing = Entry(refrigerant, "keep", "not computed", None, cautions_for(refrigerant))
+    existing = Entry(
+        refrigerant, Family.KEEP, "not computed", None, cautions_for(refrigerant), at_rest=at_rest(case, None)
+    )
     found: Baseline | None = None
     today: Today | None = None
     parts: hardware.Today | None = None
     try:
         behaviour = fluid(refrigerant.designation, on_build)
+        existing = replace(existing, at_rest=at_rest(case, behaviour))
         found = baseline(case, behaviour)
         case = case_with_readings(case, found)
         today = today_of(case, behaviour)
@@ -65,7 +72,7 @@ def compare(case: Case, on_build: OnBuild | None = None) -> Comparison:
         existing = _against(existing, existing, parts, behaviour)
     except RetrofitError as error:
         existing = replace(existing, reason=error.message)
-    candidates = [_candidate(today, parts, find(name), existing, on_build) for name in case.compare.candidates]
+    candidates = [_candidate(case, today, parts, find(name), existing, on_build) for name in case.compare.candidates]
     return Comparison(
         case=case,
         existing=existing,
@@ -94,21 +101,28 @@ def case_as_taken(case: Case, on_build: OnBuild | None = None) -> Case:
 
 
 def _candidate(
+    case: Case,
     today: Today | None,
     parts: hardware.Today | None,
     refrigerant: Refrigerant,
     existing: Entry,
     on_build: OnBuild | None,
 ) -> Entry:
-    changes = change_cautions(existing.refrigerant, refrigerant)
-    is_step_known = existing.refrigerant.safety_class.text and refrigerant.safety_class.text
-    family = "replace" if changes and is_step_known else "convert"
-    entry = Entry(refrigerant, family, "not computed", None, (*changes, *cautions_for(refrigerant)))
-    if today is None or parts is None:
-        name = existing.refrigerant.designation
-        return replace(entry, reason=f"{name}, the existing refrigerant it would be matched to, is not computed")
+    entry = Entry(
+        refrigerant,
+        family_of(case, existing.refrigerant, refrigerant),
+        "not computed",
+        None,
+        (*change_cautions(existing.refrigerant, refrigerant), *cautions_for(refrigerant)),
+        at_rest=at_rest(case, None),
+        is_new_plant=is_new_plant(case, refrigerant),
+    )
     try:
         behaviour = fluid(refrigerant.designation, on_build)
+        entry = replace(entry, at_rest=at_rest(case, behaviour))
+        if today is None or parts is None:
+            name = existing.refrigerant.designation
+            return replace(entry, reason=f"{name}, the existing refrigerant it would be matched to, is not computed")
         return _against(_solved(today, entry, behaviour), existing, parts, behaviour)
     except RetrofitError as error:
         return replace(entry, reason=error.message)
@@ -150,11 +164,14 @@ def _point(state: object) -> Point:
 
 def _against(entry: Entry, existing: Entry, parts: hardware.Today, behaviour: Fluid) -> Entry:
     """Add the ratios to the existing refrigerant, and what the hardware sees with both."""
+    if entry.is_new_plant:
+        entry = _on_its_own(entry)
     if entry.duty is None or existing.duty is None:
         return entry
     ratios = {
         name: getattr(getattr(entry, basis), quantity) / getattr(getattr(existing, basis), quantity)
         for name, basis, quantity in RATIOS
+        if not (entry.is_new_plant and basis == OF_MACHINE)
     }
     if entry.plant and existing.plant:
         ratios |= _plant_ratios(entry.plant, existing.plant)
@@ -163,8 +180,13 @@ def _against(entry: Entry, existing: Entry, parts: hardware.Today, behaviour: Fl
         entry,
         relative=ratios,
         T_discharge_difference_K=difference,
-        hardware_numbers=hardware.hardware_numbers(parts, behaviour, entry),
+        hardware_numbers=None if entry.is_new_plant else hardware.hardware_numbers(parts, behaviour, entry),
     )
+
+
+def _on_its_own(entry: Entry) -> Entry:
+    """Return a new plant without anything of the existing machine; its year is sized from exchangers like today's."""
+    return replace(entry, compressor=None, plant=None, plant_reason=NEW_PLANT, like_today=entry.plant, is_covered=None)
 
 
 def _plant_ratios(new: Installed, today: Installed) -> dict[str, float]:

@@ -97,6 +97,8 @@ def criteria(comparison: Comparison, found: Accounts, uses: Mapping[str, Use], i
     edition = edition_of(comparison.case)
     options = []
     for entry in comparison.entries:
+        if entry.refrigerant.designation not in found.options:
+            continue
         name, is_kept = entry.refrigerant.designation, entry is comparison.existing
         use = uses.get(name, Use())
         options.append(Weighed(entry, found.options[name], use, is_kept, edition, comparison.existing))
@@ -109,10 +111,9 @@ def gate(entry: Entry) -> str:
     Args:
         entry: The option, after the checks.
     """
-    stops = dict.fromkeys(finding.title for finding in entry.findings if finding.level == "stop")
-    if stops:
-        return "; ".join(stops)
-    return "" if entry.status == "ok" else f"not computed: {entry.reason}"
+    if entry.stops:
+        return "; ".join(dict.fromkeys(finding.title for finding in entry.stops))
+    return "" if entry.is_computed else f"not computed: {entry.reason}"
 
 
 def _measured(name: str, measures: tuple[Measure, ...], options: list[Weighed]) -> Criterion:
@@ -243,10 +244,12 @@ def _disruption(index: int) -> tuple[Measure, ...]:
     def points(option: Weighed) -> float | None:
         if option.is_kept:
             return 0.0
+        if option.entry.is_new_plant:
+            return HARDWARE_POINTS["replace"] * len(option.existing.hardware)
         rows = option.entry.hardware
         return sum(HARDWARE_POINTS[row.verdict] for row in rows) if rows else None
 
-    name = "1 for each component to adjust, 2 for each to replace or not known"
+    name = "1 for each component to adjust, 2 for each to replace or not known; a new plant replaces all"
     return (Measure(name, "points", points, _nothing),)
 
 

@@ -23,8 +23,9 @@ from retrofit.study.draws import (
     year_rows,
 )
 from retrofit.study.plan import Use
-from retrofit.study.result import Comparison, Entry, FloatArray
+from retrofit.study.result import Comparison, Entry, FloatArray, Installed
 from retrofit.study.spread import Spread, base_only, single
+from retrofit.study.states import Family
 from retrofit.study.today import Today, today_of
 from retrofit.study.uncertain import Sample, Uncertain, counted_inputs, physical_inputs, sample
 from retrofit.study.year import (
@@ -197,23 +198,29 @@ def _way(today: Today | None, entry: Entry) -> _Way:
         return _Way(entry, reason=entry.reason or "it is not computed")
     case, name = today.case, entry.refrigerant.designation
     option = case.options.by_refrigerant.get(name) if case.options else None
-    if entry.family == "replace" and option is not None and option.seasonal_cop is not None:
+    if entry.family == Family.REPLACE and option is not None and option.seasonal_cop is not None:
         return _Way(entry, seasonal_cop=option.seasonal_cop)
-    if today.plant is None or entry.plant is None:
-        return _Way(entry, reason=entry.plant_reason or today.plant_reason or "it does not run on the plant")
+    if today.plant is None or _balanced(entry) is None:
+        return _Way(entry, reason=today.plant_reason or entry.plant_reason or "it does not run on the plant")
     try:
         return _Way(entry, _plant(today, entry))
     except RetrofitError as error:
         return _Way(entry, reason=error.message)
 
 
+def _balanced(entry: Entry) -> Installed | None:
+    """Return the balance that a year starts from: of the plant as installed, or of a new one like it."""
+    return entry.plant or entry.like_today
+
+
 def _plant(today: Today, entry: Entry) -> YearPlant:
     """Return the plant of an option: the existing one, or for a new plant one with the displacement it needs."""
+    balanced = _balanced(entry)
     assert today.plant is not None
-    assert entry.plant is not None
+    assert balanced is not None
     lowest = lowest_condensing_K(today.case, fluid(today.case.plant.refrigerant))
-    size = entry.plant.same_cooling.swept_volume_m3_per_s / entry.plant.full.swept_volume_m3_per_s
-    factor = size if entry.family == "replace" else 1.0
+    size = balanced.same_cooling.swept_volume_m3_per_s / balanced.full.swept_volume_m3_per_s
+    factor = size if entry.family == Family.REPLACE else 1.0
     return year_plant(today.plant, fluid(entry.refrigerant.designation), lowest, factor)
 
 

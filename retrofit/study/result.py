@@ -15,6 +15,7 @@ from retrofit.refrigerants import Caution, Refrigerant
 from retrofit.study.hardware.numbers import HardwareNumbers
 from retrofit.study.law import LawBasis, LawCheck
 from retrofit.study.room import RoomCheck
+from retrofit.study.states import Family, Level, RestState, Verdict
 
 if TYPE_CHECKING:
     from retrofit.study.life import Life
@@ -131,6 +132,8 @@ class Finding:
         fact: The number of this refrigerant against the threshold.
         advice: What follows and what to do, the same for every refrigerant; may be empty.
         source: Where the threshold comes from.
+        missing: Full keys of the case that would settle an unknown; any one of them may do.
+        decisive: Whether no verdict can be in favour while this is unknown.
     """
 
     code: str
@@ -139,6 +142,8 @@ class Finding:
     fact: str
     advice: str
     source: str
+    missing: tuple[str, ...] = ()
+    decisive: bool = False
 
     @property
     def text(self) -> str:
@@ -271,17 +276,46 @@ class ChartLines:
 
 
 @dataclass(frozen=True)
+class AtRest:
+    """A refrigerant in the plant at rest, and where it would condense, known also where no cycle can be solved.
+
+    Attributes:
+        state: What is known of the pressure at rest.
+        p_Pa: Bubble pressure at the highest ambient temperature; None unless it is computed.
+        T_highest_K: The highest ambient temperature; None if the case does not give it.
+        T_critical_K: Critical temperature; None without a model.
+        T_condensing_K: Condensing temperature of the case.
+        p_condensing_Pa: Bubble pressure there; None where it is not computed.
+    """
+
+    state: RestState
+    p_Pa: float | None
+    T_highest_K: float | None
+    T_critical_K: float | None
+    T_condensing_K: float
+    p_condensing_Pa: float | None
+
+    @property
+    def can_condense(self) -> bool | None:
+        """Return whether it condenses at the condensing temperature of the case; None if that is not known."""
+        return None if self.T_critical_K is None else self.T_critical_K > self.T_condensing_K
+
+
+@dataclass(frozen=True)
 class Entry:
     """One refrigerant of a study: the existing one or a candidate.
 
     Attributes:
         refrigerant: Its catalogue entry.
         family: "keep", "convert" or "replace".
+        is_new_plant: Whether the case describes a new plant for it: then nothing of the existing machine counts.
         status: "ok" or "not computed"; `reason` then says why.
         grade: How far its model can be trusted, None without a model.
         duty: Same duty: displacement, mass flow and power follow.
         compressor: Same compressor: capacity and power follow.
         plant: Same plant, None with `plant_reason` if the case does not describe it or it does not balance.
+        like_today: A new plant with exchangers like today's, from which its year is sized; None for other options.
+        at_rest: The plant at rest with it.
         points: State points of the cycle, beginning at the compressor inlet.
         lines: Lines for its pressure-enthalpy chart.
         relative: Ratios to the existing refrigerant.
@@ -296,7 +330,7 @@ class Entry:
     """
 
     refrigerant: Refrigerant
-    family: str
+    family: Family
     status: str
     reason: str | None
     cautions: tuple[Caution, ...]
@@ -305,6 +339,8 @@ class Entry:
     compressor: Performance[float] | None = None
     plant: Installed | None = None
     plant_reason: str | None = None
+    like_today: Installed | None = None
+    at_rest: AtRest | None = None
     points: tuple[Point, ...] = ()
     lines: ChartLines | None = None
     relative: Mapping[str, float] = field(default_factory=dict)
@@ -315,8 +351,29 @@ class Entry:
     law: LawCheck | None = None
     findings: tuple[Finding, ...] = ()
     hardware: tuple[Component, ...] = ()
-    verdict: str = ""
+    verdict: Verdict = Verdict.NOT_JUDGED
     room: RoomCheck | None = None
+    is_new_plant: bool = False
+
+    @property
+    def is_computed(self) -> bool:
+        """Return whether there are numbers of it. [-]"""
+        return self.duty is not None
+
+    @property
+    def stops(self) -> tuple[Finding, ...]:
+        """Return what stops it, in the order of checking."""
+        return tuple(finding for finding in self.findings if finding.level == Level.STOP)
+
+    @property
+    def open_facts(self) -> tuple[Finding, ...]:
+        """Return the decisive facts that are missing, in the order of checking."""
+        return tuple(item for item in self.findings if item.level == Level.UNKNOWN and item.decisive)
+
+    @property
+    def can_be_chosen(self) -> bool:
+        """Return whether it is computed and no check stops it; it may still be open. [-]"""
+        return self.is_computed and not self.stops
 
 
 @dataclass(frozen=True)

@@ -12,14 +12,14 @@ from retrofit.study import Comparison, Component, Entry, Finding
 # Whose finding is one of the gates', or part of the work that every conversion needs.
 FOUND_BY_GATES = (
     *("high-side", "vacuum", "near-critical", "discharge-temperature", "pressure-ratio", "motor", "displacement"),
-    *("condenser", "evaporator", "oil", "drier"),
+    *("condenser", "evaporator", "oil", "drier", "standstill", "relief"),
 )
 # Beyond these a refrigerant is not put into the plant as it is.
-STOPS = ("relief", "standstill", "metals")
+STOPS = ("metals",)
 
 
 def hardware_rows(comparison: Comparison, entry: Entry, findings: Sequence[Finding]) -> tuple[Component, ...]:
-    """Return the hardware table of a refrigerant; without numbers only what needs none.
+    """Return the hardware table of a refrigerant: of a new plant none, without numbers only what needs none.
 
     Args:
         comparison: The result.
@@ -27,7 +27,9 @@ def hardware_rows(comparison: Comparison, entry: Entry, findings: Sequence[Findi
         findings: What the gates found of it.
     """
     view = View(comparison, entry, thresholds_for(comparison.case), findings)
-    makers = [*materials.ALWAYS]
+    if entry.is_new_plant:
+        return ()
+    makers = [*pressures.ROWS_AT_REST, *materials.ALWAYS]
     if entry.hardware_numbers is not None and entry.duty is not None:
         numbered = (*pressures.ROWS, *machine.ROWS, *flow.ROWS, *materials.NUMBERED)
         makers = [*numbered, *materials.ALWAYS, *settings.ROWS]

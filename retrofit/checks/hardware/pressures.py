@@ -4,7 +4,8 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
-from retrofit.checks.corners import worst
+from retrofit.checks.at_rest import ABOVE_PLATE
+from retrofit.checks.corners import conditions, worst
 from retrofit.checks.hardware.rows import Bound, Matter, View, judged, performance_measure, stated
 from retrofit.study import Component, Measure
 from retrofit.study.hardware.numbers import OldNew
@@ -22,21 +23,23 @@ def _condensing(view: View) -> tuple[Measure, Measure]:
     )
 
 
-def _highest(view: View) -> float:
-    """Return the highest condensing pressure known, as a gauge shows it. [Pa]"""
-    return worst(view.entry, "p_cond_Pa").value - view.case.plant.ambient_pressure_Pa
+def _highest(view: View) -> float | None:
+    """Return the highest condensing pressure known, as a gauge shows it; None if none is. [Pa]"""
+    if conditions(view.entry):
+        return view.gauge(worst(view.entry, "p_cond_Pa").value)
+    return view.gauge(view.entry.at_rest.p_condensing_Pa) if view.entry.at_rest else None
 
 
 def high_side(view: View) -> Iterator[Component]:
     """Compare condensing with the nameplate of the high side."""
     plate = view.case.plant.high_side_limit_Pa
-    missing = [view.numbers.new.missing["hottest"]]
-    fact = f"Condensing reaches {_gauge(_highest(view))}."
+    missing, highest = [view.gap("hottest")], _highest(view)
+    fact = "It does not condense." if highest is None else f"Condensing reaches {_gauge(highest)}."
     if plate is None:
         missing.insert(0, "`high_side_limit` in [plant] is not given")
-    else:
-        share = _highest(view) / (plate - view.case.plant.ambient_pressure_Pa)
-        fact = f"Condensing reaches {_gauge(_highest(view))}, {share:.0%} of the nameplate pressure."
+    elif highest is not None:
+        share = highest / (plate - view.case.plant.ambient_pressure_Pa)
+        fact = f"Condensing reaches {_gauge(highest)}, {share:.0%} of the nameplate pressure."
     measures = (*_condensing(view), view.pressures("Nameplate of the high side", OldNew(plate, plate)))
     ask = "Written confirmation of the maximum pressure of each vessel and part of the high side."
     bound = Bound(view.limits["high_side"])
@@ -49,6 +52,7 @@ def switch(view: View) -> Iterator[Component]:
     """Compare the high-pressure switch, which stays with the vessel, with nameplate and hottest day."""
     cut_out = view.case.controls.high_pressure_cut_out_Pa if view.case.controls else None
     plate, highest = view.gauge(view.case.plant.high_side_limit_Pa), _highest(view)
+    assert highest is not None, "asked for solved refrigerants only"
     bounds = Bound(view.limits["switch_setting"]), Bound(view.limits["switch_margin"])
     ask = "Range of the switch; which setting the vessel, not the refrigerant, allows."
     measures = (view.pressures("Cut-out", OldNew(cut_out, cut_out)), *_condensing(view))
@@ -73,7 +77,7 @@ def switch(view: View) -> Iterator[Component]:
 
 def relief(view: View) -> Iterator[Component]:
     """Compare the relief valve of the high side with the highest pressure in operation and at rest."""
-    setting, rest = view.gauge(view.case.plant.relief_setting_Pa), view.gauge(view.numbers.new.p_standstill_Pa)
+    setting, rest = view.gauge(view.case.plant.relief_setting_Pa), view.gauge(_rest(view).new)
     plate, operating = view.gauge(view.case.plant.high_side_limit_Pa), _highest(view)
     bounds = Bound(view.limits["relief_margin"], "below"), Bound(view.limits["relief_seep"])
     measures = (
@@ -86,17 +90,16 @@ def relief(view: View) -> Iterator[Component]:
         matter = Matter("relief", "Relief valve, setting", "", measures, bounds, ask)
         yield judged(matter, [], ["`relief_setting` in [plant] is not given"])
         return
-    levels = [bounds[0].level(setting / operating), bounds[1].level(operating / setting)]
-    fact = (
-        f"It opens at {_gauge(setting)}, {setting / operating:.2f} times the {_gauge(operating)} reached in operation"
-    )
+    levels, fact = [view.level("relief")], f"It opens at {_gauge(setting)}"
+    if operating is not None:
+        levels += [bounds[0].level(setting / operating), bounds[1].level(operating / setting)]
+        fact += f", {setting / operating:.2f} times the {_gauge(operating)} reached in operation"
     if rest is not None:
-        levels += ["stop" if rest > setting else bounds[1].level(rest / setting)]
+        levels.append(bounds[1].level(rest / setting))
         fact += f"; at rest there are {_gauge(rest)}"
-    if plate is not None and setting > plate * (1.0 + 1e-6):
-        levels.append("stop")
+    if plate is not None and setting > plate * (1.0 + ABOVE_PLATE):
         fact += f"; it is set above the nameplate's {_gauge(plate)}"
-    gaps = [view.numbers.new.missing[name] for name in ("hottest", "standstill")]
+    gaps = [view.gap(name) for name in ("hottest", "standstill")]
     if plate is None:
         gaps.append("`high_side_limit` in [plant] is not given")
     matter = Matter("relief", "Relief valve, setting", f"{fact}.", measures, bounds, ask)
@@ -114,14 +117,16 @@ def relief_capacity(view: View) -> Iterator[Component]:
 
 
 def _at_rest(view: View) -> Measure:
-    return view.pressures(
-        "Pressure at rest", OldNew(view.numbers.old.p_standstill_Pa, view.numbers.new.p_standstill_Pa)
-    )
+    return view.pressures("Pressure at rest", _rest(view))
+
+
+def _rest(view: View) -> OldNew:
+    return OldNew(*(entry.at_rest.p_Pa if entry.at_rest else None for entry in (view.comparison.existing, view.entry)))
 
 
 def standstill(view: View) -> Iterator[Component]:
     """Compare the bubble pressure at the highest ambient temperature with the weakest side."""
-    plant, rest = view.case.plant, view.gauge(view.numbers.new.p_standstill_Pa)
+    plant, rest = view.case.plant, view.gauge(_rest(view).new)
     low, high = view.gauge(plant.low_side_limit_Pa), view.gauge(plant.high_side_limit_Pa)
     plates = [plate for plate in (low, high) if plate is not None]
     bound = Bound(view.limits["standstill"])
@@ -130,7 +135,7 @@ def standstill(view: View) -> Iterator[Component]:
         view.pressures("Nameplate of the low side", OldNew(*[plant.low_side_limit_Pa] * 2)),
         view.pressures("Nameplate of the high side", OldNew(*[plant.high_side_limit_Pa] * 2)),
     )
-    gaps = [view.numbers.new.missing["standstill"]]
+    gaps = [view.gap("standstill")]
     gaps += ["`low_side_limit` in [plant] is not given"] if low is None else []
     share = rest / min(plates) if rest is not None and plates else None
     fact = ""
@@ -139,7 +144,7 @@ def standstill(view: View) -> Iterator[Component]:
         fact += f", {share:.0%} of the lowest nameplate's {_gauge(min(plates))}." if share is not None else "."
     ask = "Maximum pressure of the low side: evaporators, suction accumulators, crankcase."
     matter = Matter("standstill", "Low side at standstill", fact, measures, (bound,), ask)
-    yield judged(matter, [bound.level(share)], gaps)
+    yield judged(matter, [view.level("standstill"), bound.level(share)], gaps)
 
 
 def vacuum(view: View) -> Iterator[Component]:
@@ -178,3 +183,5 @@ def near_critical(view: View) -> Iterator[Component]:
 
 
 ROWS = (high_side, switch, relief, relief_capacity, standstill, vacuum, near_critical)
+# What needs no cycle.
+ROWS_AT_REST = (high_side, relief, standstill)

@@ -46,6 +46,11 @@ class View:
         """Return whether this is the refrigerant in the plant."""
         return self.entry is self.comparison.existing
 
+    def gap(self, name: str) -> str:
+        """Return why a number of the new refrigerant is not known, in words; empty if it is."""
+        numbers = self.entry.hardware_numbers
+        return numbers.new.missing[name] if numbers else f"{self.entry.refrigerant.designation} is not computed"
+
     def level(self, code: str) -> str | None:
         """Return the level of the gates' finding with a code, None if they found nothing."""
         return next((finding.level for finding in self.findings if finding.code == code), None)
@@ -145,6 +150,8 @@ def stated(matter: Matter, verdict: str, missing: Sequence[str] = (), source: st
 
 def performance_measure(view: View, name: str, kind: str, quantity: str, condition: str = "design") -> Measure:
     """Return a measure of one quantity of the performance at a condition, old and new."""
+    if view.entry.hardware_numbers is None:
+        return Measure(name, kind, None, None)
     sides = (getattr(side, condition) for side in (view.numbers.old, view.numbers.new))
     old, new = (None if side is None else float(getattr(side, quantity)) for side in sides)
     if kind == "gauge pressure":

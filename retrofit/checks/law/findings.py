@@ -21,6 +21,7 @@ def law_findings(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
     """
     basis = comparison.law
     if basis is None:
+        yield _not_asked()
         return
     yield from _tables(basis)
     check = entry.law
@@ -36,6 +37,19 @@ def law_findings(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
     yield from _missing(check)
 
 
+def _not_asked() -> Finding:
+    return Finding(
+        "law-not-checked",
+        "unknown",
+        "Law not checked",
+        "The case names no jurisdiction.",
+        "Give `jurisdiction` in [law]. " + _CHECK,
+        _SOURCE,
+        ("law.jurisdiction",),
+        decisive=True,
+    )
+
+
 def _tables(basis: LawBasis) -> Iterator[Finding]:
     if not basis.tables:
         yield Finding(
@@ -45,6 +59,8 @@ def _tables(basis: LawBasis) -> Iterator[Finding]:
             f"{basis.jurisdiction}: there are tables for {', '.join(basis.known)}.",
             "Put a table into the folder law beside the case file, or find out what holds there. " + _CHECK,
             _SOURCE,
+            ("law.jurisdiction",),
+            decisive=True,
         )
     for problem in basis.problems:
         fact = f"{problem}."
@@ -59,7 +75,7 @@ def _ban(row: LawRow, check: LawCheck, is_today: bool) -> Iterator[Finding]:
     if row.state != APPLIES and level == "stop":
         level = "unknown"
     advice = "Ask where gas for service would come from until the plant ends. " + _CHECK
-    yield Finding("law-ban", level, title, row.brief, advice, row.source)
+    yield Finding("law-ban", level, title, row.brief, advice, row.source, decisive=level == "unknown")
 
 
 def _ban_words(row: LawRow, is_in_force: bool, is_today: bool) -> tuple[str, str]:
@@ -122,4 +138,5 @@ def _missing(check: LawCheck) -> Iterator[Finding]:
     if reasons:
         fact = f"{'; '.join(reasons)}."
         advice = "Without it the rows that need it cannot be told. " + _CHECK
-        yield Finding("law-unknown", "unknown", "Data missing for the tables of law", fact, advice, _SOURCE)
+        title = "Data missing for the tables of law"
+        yield Finding("law-unknown", "unknown", title, fact, advice, _SOURCE, decisive=True)

@@ -7,6 +7,7 @@ from collections.abc import Iterator
 from retrofit.checks.room.working import mass_told
 from retrofit.refrigerants import parse_safety_class
 from retrofit.study import Comparison, Entry, Finding
+from retrofit.study.charge import LARGEST_CIRCUIT
 from retrofit.study.room import ABOVE, UNKNOWN, RoomCheck
 
 DEFERS = "The standard in force, the authority and licensed practice decide."
@@ -24,8 +25,8 @@ def room_findings(comparison: Comparison, entry: Entry, room: RoomCheck) -> Iter
     is_existing = entry is comparison.existing
     if room.verdict == ABOVE:
         yield _above(room, is_existing)
-    elif room.verdict == UNKNOWN and (comparison.case.room or (_hazards(entry) and not is_existing)):
-        yield _unknown(entry, room)
+    elif room.verdict == UNKNOWN:
+        yield _unknown(comparison, entry, room)
     else:
         yield from _doubtful(room)
     change = room.change
@@ -76,8 +77,16 @@ def _above(room: RoomCheck, is_existing: bool) -> Finding:
     )
 
 
-def _unknown(entry: Entry, room: RoomCheck) -> Finding:
-    why = f"the refrigerant is {' and '.join(_hazards(entry))}" if _hazards(entry) else "the case gives a room"
+def _unknown(comparison: Comparison, entry: Entry, room: RoomCheck) -> Finding:
+    hazards = " and ".join(_hazards(entry))
+    why = f"the refrigerant is {hazards}" if hazards else "a leak takes the place of air"
+    missing: tuple[str, ...] = () if comparison.case.room else ("room.volume", "room.location", "room.access")
+    option = f"options.{entry.refrigerant.designation}"
+    if room.highest_kg is None:
+        missing += (f"{option}.charge" if entry.is_new_plant else "plant.charge",)
+    elif room.charge_of != LARGEST_CIRCUIT:
+        missing += (f"{option}.largest_circuit" if entry.is_new_plant else "room.largest_circuit",)
+    missing += () if room.code else ("law.code",)
     return Finding(
         "room-charge",
         "unknown",
@@ -85,6 +94,8 @@ def _unknown(entry: Entry, room: RoomCheck) -> Finding:
         f"{_charge(room)}; {why}. Missing: {'; '.join(room.unknown_because)}.",
         f"Give what is missing and look up the limits. {DEFERS}",
         "; ".join(dict.fromkeys(limit.source for limit in room.limits if limit.role == "limit")) or NO_SOURCE,
+        missing,
+        decisive=True,
     )
 
 

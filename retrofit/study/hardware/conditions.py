@@ -12,9 +12,11 @@ from retrofit.cycle import Cycle, Settings, Temperatures, compressor_pressures, 
 from retrofit.equipment.vessels import standstill
 from retrofit.errors import NoSolutionError, OutsideValidRangeError
 from retrofit.properties import Fluid
+from retrofit.study.hardware.lines import number
 from retrofit.study.installed import EfficiencyModel, ExistingPlant
 from retrofit.study.performance import as_numbers, at_swept_volume, performance
-from retrofit.study.result import Installed, Performance
+from retrofit.study.result import AtRest, Installed, Performance
+from retrofit.study.states import RestState
 from retrofit.units import ZERO_C_K
 
 
@@ -142,6 +144,42 @@ def pull_down(site: Site, behaviour: Fluid, design: Performance[float]) -> Found
         return Found(_with_own_compressor(site, behaviour, float(behaviour.p_dew(T_K)), design.p_cond_Pa))
     except OutsideValidRangeError as error:
         return Found(None, f"pull-down is not computed: {error.message}")
+
+
+def at_rest(case: Case, behaviour: Fluid | None) -> AtRest:
+    """Return the plant at rest with a refrigerant, and where it condenses: what needs no cycle.
+
+    Args:
+        case: The case.
+        behaviour: The refrigerant; None if there is no model of it.
+    """
+    T_highest, T_cond = case.plant.highest_ambient_K, float(case.duty.T_cond_K)
+    if behaviour is None:
+        state = RestState.NO_AMBIENT if T_highest is None else RestState.NOT_COMPUTED
+        return AtRest(state, None, T_highest, None, T_cond, None)
+    critical, p_cond = float(behaviour.T_critical_K), number(behaviour.as_lenient().p_bubble(np.asarray(T_cond)))
+    if T_highest is None:
+        return AtRest(RestState.NO_AMBIENT, None, None, critical, T_cond, p_cond)
+    rest = standstill(behaviour, T_highest)
+    p_rest = number(rest.p_Pa)
+    state = RestState.COMPUTED if p_rest is not None else RestState.NOT_COMPUTED
+    if rest.is_above_critical:
+        state, p_rest = RestState.ABOVE_CRITICAL, None
+    return AtRest(state, p_rest, T_highest, critical, T_cond, p_cond)
+
+
+def hottest_day_keys(case: Case) -> tuple[str, ...]:
+    """Return the keys that the hottest day needs and the case does not give.
+
+    Args:
+        case: The case.
+    """
+    keys = [] if case.plant.highest_ambient_K is not None else ["plant.highest_ambient"]
+    if case.condenser is None or case.condenser.inlet_K is None:
+        keys.append("condenser.inlet")
+    if case.condenser is None or case.condenser.medium is None:
+        keys.append("condenser.medium")
+    return tuple(keys)
 
 
 def standstill_pressure(case: Case, behaviour: Fluid) -> tuple[float | None, str]:
