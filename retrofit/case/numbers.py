@@ -29,6 +29,10 @@ class Number(FileValue):
         """Return a number, as text."""
         return self.example
 
+    def form(self) -> str:
+        """Return a number, as text."""
+        return self.sample()
+
     def read(self, value: object, p_ambient_Pa: float | None = None) -> float | int:
         """Return the number."""
         thing = "a whole number" if self.whole else "a number"
@@ -53,6 +57,10 @@ class OneOf(FileValue):
     def sample(self) -> str:
         """Return the last number, as text."""
         return str(self.numbers[-1])
+
+    def form(self) -> str:
+        """Return the numbers."""
+        return listed(map(str, self.numbers))
 
     def read(self, value: object, p_ambient_Pa: float | None = None) -> int:
         """Return the number."""

@@ -6,6 +6,8 @@ import math
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass, replace
 
+from retrofit.case import FIXED, present
+from retrofit.case.values import NOTHING
 from retrofit.checks.operating import discharge_limit, limit_of
 from retrofit.equipment.vessels import co2_equivalent_t
 from retrofit.refrigerants import GWP_BASES, is_flammable
@@ -192,11 +194,14 @@ def _targets(job: Job) -> tuple[Target, ...]:
     at_bulb = _range(job, "superheat_bulb")
     if case.plant.evaporator in ("flooded", "pumped"):
         at_bulb = f"none: {case.plant.evaporator} evaporator, hold its level"
-    elif case.valve and case.valve.kind == "capillary":
-        at_bulb = "follows from the charge: capillary tube"
-    cooling = ["subcooling_receiver"] if case.receiver else ["subcooling_receiver", "subcooling_critical"]
-    words = [_range(job, name) + (" without a receiver" if name == "subcooling_critical" else "") for name in cooling]
-    subcooling = f"{words[0]} with a receiver, sight glass clear" + "".join(f"; {more}" for more in words[1:])
+    elif case.valve and case.valve.kind in FIXED:
+        at_bulb = f"follows from the charge: {case.valve.kind}"
+    glass = "" if case.plant.sight_glass == NOTHING else ", sight glass clear"
+    with_receiver = f"{_range(job, 'subcooling_receiver')} with a receiver{glass}"
+    without = f"{_range(job, 'subcooling_critical')} without a receiver"
+    subcooling = f"{with_receiver}; {without}"
+    if case.receiver is not None:
+        subcooling = with_receiver if case.receiver.is_there else without
     return (
         Target("Superheat, evaporator outlet, from dew", at_bulb, taken[0]),
         Target("Superheat, compressor inlet, from dew", f"{_range(job, 'superheat_compressor')} at least", taken[1]),
@@ -314,7 +319,7 @@ def _window_notes(job: Job, expected: Sequence[Expected]) -> tuple[str, ...]:
         notes.append(f"Held up by the control of head pressure: {', '.join(held)}.")
     notes += [f"{INLETS[item.name].capitalize()}: {spelled(item.reason)}." for item in expected if item.reason]
     if numbers is not None and numbers.missing.get("current"):
-        notes.append(f"Current not computed: {spelled(numbers.missing['current'])}.")
+        notes.append(f"Current not computed: {spelled(numbers.missing['current'].words)}.")
     return tuple(note for note in notes if note)
 
 
@@ -380,7 +385,7 @@ def _changes(job: Job) -> tuple[Change, ...]:
     found += [Change(name, "", "", held) for key, name, held in SET_POINTS if key not in known]
     if "fan_steps" not in known:
         found.append(Change("Condenser fans, steps", "", "", "mean condensing"))
-    cut_out = controls.high_pressure_cut_out_Pa if controls else None
+    cut_out = present(controls.high_pressure_cut_out_Pa) if controls else None
     return (Change("High-pressure switch, cut-out", _bare(job, cut_out), "", "stays with the vessel"), *found)
 
 
@@ -393,7 +398,7 @@ def _charge(job: Job) -> tuple[tuple[str, str], ...]:
     filling = numbers.filling if numbers else None
     ends = [f"{end:.0%}" for end in practice("first_charge").ends]
     if filling is None or first is None:
-        why = numbers.missing.get("filling", "") if numbers else ""
+        why = numbers.missing["filling"].words if numbers else ""
         return (("Expected", UNKNOWN + (f" ({why})" if why else "")), (spelled(f"First, {span(*ends)}"), UNKNOWN))
     mass = job.units.column("mass", [filling.expected_kg, filling.lowest_kg, filling.highest_kg, *first])
     label = job.units.label("mass")
