@@ -81,7 +81,7 @@ def high_side(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             "high-side",
             Level.UNKNOWN,
             "Nameplate pressure not given",
-            "The condensing pressure cannot be compared with what the high side is built for.",
+            f"{_condensing_words(entry)} cannot be compared with what the high side is rated for.",
             "Give `high_side_limit` in [plant].",
             limit.source,
             ("plant.high_side_limit",),
@@ -107,6 +107,12 @@ def high_side(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             "Check switch, relief valve and vessel, and the hottest day if it is not given.",
             limit.source,
         )
+
+
+def _condensing_words(entry: Entry) -> str:
+    if entry.duty is None:
+        return "The condensing pressure"
+    return f"Condensing at {quantity('pressure', entry.duty.p_cond_Pa, '.1f')}"
 
 
 def _cannot_condense(rest: AtRest, limit: Threshold) -> Finding:

@@ -10,6 +10,7 @@ from retrofit.case import Law
 from retrofit.checks import assess
 from retrofit.refrigerants import find
 from retrofit.report.machine import comparison_json
+from retrofit.study import Verdict
 
 ON = datetime.date(2026, 12, 1)
 MARKET = {
@@ -52,7 +53,7 @@ def test_a_ban_already_in_force_stops_a_candidate(assessed):
     (stop,) = [finding for finding in entry.findings if finding.code == "law-ban" and finding.level == "stop"]
 
     assert levels == ["stop", "work", "work"]
-    assert entry.verdict == "does not suit"
+    assert entry.verdict == Verdict.NOT_SUITABLE
     assert "From 2025-01-01" in stop.fact
     assert "Reclaimed or recycled gas until 1 January 2030" in stop.fact
     assert "check the current text" in stop.text
@@ -128,12 +129,12 @@ def test_a_leak_rate_not_stated_is_named(assessed):
 
 
 def test_missing_data_is_unknown_and_never_good(assessed):
-    """Without a charge the verdict cannot be said, for today's refrigerant as for a candidate."""
+    """Without a charge no verdict is in favour, of today's refrigerant or of a candidate."""
     result = assessed(charge=None)
     entry = result.candidates[0]
 
     assert [level for level, _ in of_law(entry, "law-unknown")] == ["unknown"]
-    assert entry.verdict in ("cannot be said", "does not suit")
+    assert not entry.verdict.is_positive
     assert of_law(result.existing, "law-leak-check") == []
 
 
@@ -150,13 +151,16 @@ def test_a_jurisdiction_without_a_table_is_unknown(assessed):
 
 
 @pytest.mark.parametrize("law", [{key: None for key in MARKET}, {"jurisdiction": None}], ids=["none", "no place"])
-def test_without_a_jurisdiction_nothing_is_said(assessed, law):
-    """A case that names no jurisdiction has no findings of law."""
+def test_without_a_jurisdiction_law_is_not_checked_and_that_is_decisive(assessed, law):
+    """A case that names no jurisdiction has one finding of law: that it was not checked, and the key."""
     result = assessed(**law)
 
     assert result.law is None
     assert all(entry.law is None for entry in result.entries)
-    assert not [finding for entry in result.entries for finding in entry.findings if finding.code.startswith("law")]
+    for entry in result.entries:
+        (finding,) = [finding for finding in entry.findings if finding.code.startswith("law")]
+        assert (finding.level, finding.decisive, finding.missing) == ("unknown", True, ("law.jurisdiction",))
+        assert not entry.verdict.is_positive
 
 
 def test_a_stale_table_is_a_note_everywhere(assessed):

@@ -12,7 +12,7 @@ from retrofit.case.law import Law
 from retrofit.checks import assess
 from retrofit.checks.room.check import FAMILIES, against_limit, room_verdict
 from retrofit.checks.room.working import Rule, Work
-from retrofit.study import compare
+from retrofit.study import Verdict, compare
 from retrofit.study.charge import CircuitCharge
 
 RULE = Rule("rcl", "Rule", "ASHRAE 15", "edition", "m = c V", ("m: [kg]",), "source", "read")
@@ -210,7 +210,7 @@ def test_a_charge_above_a_limit_is_a_stop_for_a_candidate(results):
     assert (candidate.room.verdict, finding.level) == ("above the limit", "stop")
     assert "6.38 kg" in finding.fact
     assert candidate.room.margin_kg < 0.0
-    assert candidate.verdict == "does not suit"
+    assert candidate.verdict == Verdict.NOT_SUITABLE
 
 
 def test_a_charge_above_a_limit_today_is_work_to_clear_up(results):
@@ -229,7 +229,7 @@ def test_a_missing_input_of_the_room_is_unknown_and_named(results, key):
 
     assert (candidate.room.verdict, finding.level) == ("unknown", "unknown")
     assert f"`{key}` in [room]" in finding.fact
-    assert candidate.verdict == "cannot be said"
+    assert not candidate.verdict.is_positive
 
 
 def test_a_charge_nobody_knows_is_unknown(results):
@@ -241,12 +241,12 @@ def test_a_charge_nobody_knows_is_unknown(results):
     assert "`largest_circuit` in [room], or `charge` in [plant]" in candidate.room.unknown_because
 
 
-def test_without_a_room_only_hazardous_candidates_are_asked(results):
-    """R513A (A1) gets no finding; R1234yf and R600a are unknown because they burn, and today's gets none."""
+def test_without_a_room_every_option_is_asked(results):
+    """Charge against room is decisive for each, class A1 and today's among them; a flammable one says that it is."""
     result = results(has_room=False)
 
     assert {entry.room.verdict for entry in result.entries} == {"unknown"}
-    assert [levels(entry, "room-charge") for entry in result.entries] == [[], [], *[["unknown"]] * 3]
+    assert [levels(entry, "room-charge") for entry in result.entries] == [["unknown"]] * 5
     (finding,) = [item for item in result.candidates[1].findings if item.code == "room-charge"]
     assert "flammable" in finding.fact
     assert "[room]" in finding.fact
@@ -292,7 +292,7 @@ def test_a_step_between_flammable_refrigerants_is_work(case_of):
     """From R1234yf to R1234ze(E) both burn: not a stop by class, but work with reasons; the room is asked anew."""
     result = assess(compare(case_of("R1234yf", ["R1234ze(E)"])))
     (candidate,) = result.candidates
-    assert (levels(result.existing, "room-charge"), levels(candidate, "room-charge")) == ([], ["unknown"])
+    assert (levels(result.existing, "room-charge"), levels(candidate, "room-charge")) == (["unknown"], ["unknown"])
     (finding,) = [item for item in candidate.findings if item.code == "class-change"]
 
     assert finding.level == "work"
@@ -353,4 +353,4 @@ def test_the_stop_on_a_class_says_what_the_place_asks(results, jurisdiction, wor
     ]
 
     assert stop.level == "stop"
-    assert all(part in stop.advice for part in ("whole system", "owner and authority", "name plate", words))
+    assert all(part in stop.advice for part in ("whole system", "owner and authority", "nameplate", words))
