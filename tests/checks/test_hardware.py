@@ -11,6 +11,7 @@ from retrofit.errors import CaseFileError
 from retrofit.refrigerants import find
 from retrofit.report.machine import UNITS
 from retrofit.study import RestState, Verdict, compare
+from retrofit.study.gaps import Gap
 from retrofit.study.hardware.numbers import OldNew
 from retrofit.units import IP, SI, told
 
@@ -528,7 +529,10 @@ def test_nothing_is_green_where_everything_is_missing(case_with):
 
 def test_a_pressure_above_a_limit_is_never_softened_by_what_is_missing(whole):
     """Above the nameplate is a stop also where the hottest day is not known."""
-    new = {"hottest": None, "missing": {**whole.candidates[0].hardware_numbers.new.missing, "hottest": "not given"}}
+    new = {
+        "hottest": None,
+        "missing": {**whole.candidates[0].hardware_numbers.new.missing, "hottest": Gap("not given")},
+    }
     comparison = turned(whole, new=new)
     first = comparison.candidates[0]
     hot = replace(first, duty=replace(first.duty, p_cond_Pa=AIR_PA + 29 * BAR))

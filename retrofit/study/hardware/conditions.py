@@ -83,7 +83,7 @@ def hottest_day(site: Site, behaviour: Fluid, installed: Installed | None) -> Fo
     """
     keys, inlet_K = hottest_day_keys(site.case), hottest_inlet_K(site.case)
     if inlet_K is None:
-        return Found(None, not_given(*keys[:1]) if len(keys) == 1 else _not_given_together(keys))
+        return Found(None, _not_given_together(keys, site.case))
     try:
         if installed is None:
             assert site.case.condenser
@@ -130,8 +130,10 @@ def hottest_day_keys(case: Case) -> tuple[str, ...]:
     return ("plant.highest_ambient", *keys) if case.plant.highest_ambient_K is None else tuple(keys)
 
 
-def _not_given_together(keys: tuple[str, ...]) -> Gap:
+def _not_given_together(keys: tuple[str, ...], case: Case) -> Gap:
     parts = [not_given(key).words for key in keys]
+    if HIGHEST_INLET in keys and case.condenser is not None:
+        parts[-1] = f"the condenser is cooled by {case.condenser.medium}, and {parts[-1]}"
     return Gap("; ".join(parts), keys)
 
 
