@@ -91,6 +91,24 @@ class Approvals(Table):
         None,
         where="makers of compressor and valves: lists of materials",
     )
+    standstill: _ANSWER = key(
+        "standstill",
+        "Whether the plant holds the pressure at rest, where no liquid is left and charge and volume set it.",
+        None,
+        where="maker of the plant",
+    )
+    room: _ANSWER = key(
+        "room",
+        "Whether its charge is approved for the room, where the rules held here do not decide.",
+        None,
+        where="authority or engineer in charge, by the standard in force",
+    )
+    law: _ANSWER = key(
+        "law",
+        "Whether law permits it here, where the tables held here leave it open.",
+        None,
+        where="authority, with the text in force",
+    )
     metals: _ANSWER = key(
         "metals", "Whether every metal that it touches suits it.", None, where="makers of compressor, coils and valves"
     )

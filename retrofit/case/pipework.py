@@ -91,7 +91,7 @@ class Receiver(Table):
 
     volume_m3: Annotated[
         float | Absent, OrNone(Quantity("volume", "0 l", "1000 m3", "receivers lie within it", above_low=True))
-    ] = key("volume", "Inside volume.", where="nameplate of the receiver")
+    ] = key("volume", "Inside volume of the receiver.", where="nameplate of the receiver")
 
     @property
     def is_there(self) -> bool:

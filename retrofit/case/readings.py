@@ -87,19 +87,19 @@ class Controls(Table):
 
     low_pressure_cut_out_Pa: _SET = key(
         "low_pressure_cut_out",
-        "Low-pressure switch stops the compressor.",
+        "Pressure at which the low-pressure switch stops the compressor.",
         None,
         where="scale of the low-pressure switch, tried by an actual trip",
     )
     low_pressure_cut_in_Pa: _SET = key(
         "low_pressure_cut_in",
-        "Low-pressure switch lets it start again.",
+        "Pressure at which the low-pressure switch lets the compressor start again.",
         None,
         where="scale of the low-pressure switch",
     )
     high_pressure_cut_out_Pa: _SET = key(
         "high_pressure_cut_out",
-        "High-pressure switch stops the compressor.",
+        "Pressure at which the high-pressure switch stops the compressor.",
         None,
         where="scale of the high-pressure switch, tried by an actual trip",
     )

@@ -170,6 +170,9 @@ match = "mean"                   # refrigerants are compared at equal mean (or d
 # lines = {{R448A = "approved"}}   # by calculation
 # seals = {{R448A = "approved"}}
 # metals = {{R448A = "approved"}}
+# standstill = {{R448A = "approved"}}
+# room = {{R448A = "approved"}}   # by the authority, where the rules held here do not decide
+# law = {{R448A = "approved"}}   # by the authority, where the tables held here leave it open
 
 # [room]                         # the smallest occupied room that a leak can fill
 # name = "sales floor"

@@ -13,6 +13,7 @@ from retrofit.checks.law import law_findings, with_law
 from retrofit.checks.law.reader import tables_for
 from retrofit.checks.room import room_check, room_findings
 from retrofit.checks.thresholds import thresholds_for
+from retrofit.checks.ways_out import with_way_out
 from retrofit.study import Comparison, Entry, Finding, Level, Verdict
 
 LEVELS = tuple(Level)
@@ -95,6 +96,8 @@ def _assessed(comparison: Comparison, entry: Entry) -> Entry:
         found.insert(0, _not_computed(entry))
     if is_untouched(comparison.case.text):
         found.insert(0, PLACEHOLDERS)
+    entry = replace(entry, room=room)
+    found = [with_way_out(comparison, entry, finding) for finding in found]
     found.sort(key=_place)
     return replace(entry, findings=tuple(found), hardware=rows, room=room, verdict=verdict(found))
 

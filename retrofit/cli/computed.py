@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
 from datetime import datetime
 from pathlib import Path
 from typing import TYPE_CHECKING
@@ -27,11 +28,16 @@ def compared(case_file: Path, on: datetime | None) -> Comparison:
     return assess(compare_case(read_case(case_file), say_build), on.date() if on else None)
 
 
-def with_life_if_asked(comparison: Comparison) -> Comparison:
-    """Return a result with the remaining life if its case asks for any of it."""
+def with_life_if_asked(comparison: Comparison, *, in_short: bool = False) -> Comparison:
+    """Return a result with the remaining life if its case asks for any of it.
+
+    Args:
+        comparison: An assessed result.
+        in_short: Whether like hours are taken together and nothing is drawn, to see what can be told at all.
+    """
     case = comparison.case
     if case.year is None and case.emissions is None and case.money is None:
         return comparison
-    from retrofit.study.life import with_life
+    from retrofit.study.life import life_of, with_life
 
-    return with_life(comparison)
+    return replace(comparison, life=life_of(comparison, 0, hourly=False)) if in_short else with_life(comparison)

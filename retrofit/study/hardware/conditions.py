@@ -120,7 +120,7 @@ def hottest_day_keys(case: Case) -> tuple[str, ...]:
     """
     condenser, keys = case.condenser, []
     if condenser is None or condenser.inlet_K is None:
-        keys.append("condenser.inlet")
+        keys += ["condenser.inlet", "condenser.outlet", "condenser.arrangement"]  # which the case file wants together
     if condenser is not None and condenser.highest_inlet_K is not None:
         return tuple(keys)
     if condenser is None or condenser.medium is None:
