@@ -1,7 +1,8 @@
 """Every unknown has a way out: it names keys that the case file has, and filled in they settle it.
 
-From each shipped case everything but plant, duty and candidates is taken out, which leaves most of it unknown. The keys that its unknowns name are then filled with what the shipped case says, or with an ordinary value, again and
-again until nothing is unknown.
+From each shipped case everything but plant, duty and candidates is taken out, which leaves most of it unknown. The
+keys that its unknowns name are then filled with what the shipped case says, or with an ordinary value, again and again
+until nothing is unknown.
 """
 
 import copy
