@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-from dataclasses import replace
 from datetime import datetime
 from pathlib import Path
 from typing import TYPE_CHECKING
@@ -38,6 +37,6 @@ def with_life_if_asked(comparison: Comparison, *, in_short: bool = False) -> Com
     case = comparison.case
     if case.year is None and case.emissions is None and case.money is None:
         return comparison
-    from retrofit.study.life import life_of, with_life
+    from retrofit.study.life import life_of, lived, with_life
 
-    return replace(comparison, life=life_of(comparison, 0, hourly=False)) if in_short else with_life(comparison)
+    return lived(comparison, life_of(comparison, 0, hourly=False)) if in_short else with_life(comparison)
