@@ -7,9 +7,10 @@ from retrofit.case.approvals import Approvals
 from retrofit.case.compressor import Compressor, Polynomial
 from retrofit.case.emissions import EDITIONS, Emissions, GridYear, TopUp
 from retrofit.case.exchangers import Condenser, Evaporator, Exchanger
+from retrofit.case.jurisdictions import EU_MEMBERS, JURISDICTIONS, areas
 from retrofit.case.keys import KeyFacts, facts_of, meaning, quantity, sum_of_money
 from retrofit.case.laid import as_key, as_text, as_toml, as_value, laid_over
-from retrofit.case.law import EQUIPMENT, Law
+from retrofit.case.law import ARRANGEMENTS, EQUIPMENT, Law
 from retrofit.case.logo import Logo
 from retrofit.case.model import Case, Default
 from retrofit.case.money import Items, Money, Option, Options, Range
@@ -29,9 +30,12 @@ from retrofit.case.year import Bin, Climate, Year
 
 __all__ = [
     "ABSENT",
+    "ARRANGEMENTS",
     "EDITIONS",
     "EQUIPMENT",
+    "EU_MEMBERS",
     "FIXED",
+    "JURISDICTIONS",
     "SCHEMA_FILE",
     "Absent",
     "Approvals",
@@ -75,6 +79,7 @@ __all__ = [
     "TopUp",
     "Valve",
     "Year",
+    "areas",
     "as_key",
     "as_text",
     "as_toml",

@@ -6,8 +6,9 @@ import datetime
 from typing import Annotated
 
 from retrofit.case.dates import Day, YesNo
+from retrofit.case.jurisdictions import HINTS, JURISDICTIONS
 from retrofit.case.table import Table, WhyDefault, key
-from retrofit.case.values import Choice, Quantity, Text
+from retrofit.case.values import Choice, Quantity
 
 EQUIPMENT = (
     "refrigeration",
@@ -29,6 +30,21 @@ EQUIPMENT = (
 )
 """Kinds of equipment, as case files and tables of law name them; residential means light commercial too."""
 
+ARRANGEMENTS = (
+    "self-contained",
+    "movable plug-in",
+    "single split",
+    "multi split",
+    "double duct",
+    "multipack",
+    "built on site",
+)
+"""How equipment is put together, as the tables of law tell it apart.
+
+self-contained: no part that holds gas is connected on site. multipack: two or more compressors in parallel on common
+condensers, for several cooling devices. built on site: connected there, and none of the others.
+"""
+
 CODES = ("ASHRAE 15", "EN 378", "ISO 5149", "both")
 DAY = Day("1980-01-01", "2100-12-31", "plants and their laws lie within it")
 _STRICTER = "the stricter rule is taken"
@@ -38,14 +54,21 @@ _HINTS = (
     ("REMOTE CONDENSING UNIT", "condensing unit"),
     ("DATA CENTER", "data centre"),
 )
+_BUILT = (
+    ("MONOBLOCK", "self-contained"),
+    ("SPLIT", "single split"),
+    ("VRF", "multi split"),
+    ("RACK", "multipack"),
+    ("REMOTE", "built on site"),
+)
 
 
 class Law(Table):
     """Where the plant stands in law. The tables of law are data; whoever uses them checks the current text."""
 
-    jurisdiction: Annotated[str | None, Text(40)] = key(
+    jurisdiction: Annotated[str | None, Choice(JURISDICTIONS, HINTS)] = key(
         "jurisdiction",
-        "Whose law: a name that the tables of law use, such as EU or US.",
+        "Whose law: EU or a member of it, GB (Great Britain), NI (Northern Ireland), US, US-CA (California), or other.",
         None,
         where="where the plant stands",
     )
@@ -58,6 +81,20 @@ class Law(Table):
     end: Annotated[datetime.date | None, DAY] = key("end", "Day on which the plant is to be taken out of use.", None)
     equipment: Annotated[str | None, Choice(EQUIPMENT, _HINTS)] = key(
         "equipment", "Kind of equipment, as the tables of law name it.", None, where="what the plant is for"
+    )
+    arrangement: Annotated[str | None, Choice(ARRANGEMENTS, _BUILT)] = key(
+        "arrangement", "How the equipment is put together; limits for new equipment differ by it.", None
+    )
+    rated_capacity_W: Annotated[
+        float | None, Quantity("power", "0.01 kW", "100 MW", "no single plant has more", example="45 kW")
+    ] = key("rated_capacity", "Rated capacity of new equipment; if left out the duty is taken.", None)
+    cascade_primary: Annotated[bool | None, YesNo()] = key(
+        "cascade_primary", "Whether it is the primary circuit of a cascade; not claimed if left out.", None
+    )
+    safety_exception: Annotated[bool | None, YesNo()] = key(
+        "safety_exception",
+        "Whether safety at the site rules out what the limit for new equipment leaves; not claimed if left out.",
+        None,
     )
     hermetically_sealed: Annotated[bool, YesNo(), WhyDefault(_STRICTER)] = key(
         "hermetically_sealed", "Whether the equipment is hermetically sealed and labelled so.", False

@@ -9,7 +9,7 @@ from pydantic import Field
 
 from retrofit.case.numbers import Number
 from retrofit.case.table import Items, Table, WhyDefault, key
-from retrofit.case.values import NOTHING, Absent, AbsolutePressure, Choice, OrNone, Quantity, Refrigerant
+from retrofit.case.values import NOTHING, PRESSURE_LIMIT, Absent, Choice, OrNone, Quantity, Refrigerant
 from retrofit.units import standard_atmosphere_Pa
 
 MOST_CANDIDATES = 40
@@ -36,7 +36,6 @@ CONTROLLERS = ("fixed to refrigerant", "selectable", "none")
 _METAL = Choice(METALS, (("ALUMINUM", "aluminium"), ("STAINLESS STEEL", "stainless"), ("IRON", "steel")))
 _REFRIGERANT = Refrigerant()
 
-_NAMEPLATE = AbsolutePressure("1 bar a", "300 bar a", "nameplates of plants lie within it")
 _TEMPERATURE = Quantity("temperature", "-120 degC", "150 degC", "vapour-compression plants work within it")
 _SUPERHEAT = Quantity("temperature difference", "0 K", "80 K", "more points to a reading error")
 _SUBCOOLING = Quantity("temperature difference", "0 K", "50 K", "counted below the bubble point")
@@ -86,21 +85,19 @@ class Plant(Table):
         None,
         where="hottest place beside plant and vessels in summer; design data of the site",
     )
-    high_side_limit_Pa: Annotated[float | None, _NAMEPLATE] = key(
+    high_side_limit_Pa: Annotated[float | None, PRESSURE_LIMIT] = key(
         "high_side_limit",
         "Maximum pressure on the nameplate of the high side.",
         None,
         where="nameplates of condenser, receiver and compressor: the lowest of them",
     )
-    low_side_limit_Pa: Annotated[float | None, _NAMEPLATE] = key(
+    low_side_limit_Pa: Annotated[float | None, PRESSURE_LIMIT] = key(
         "low_side_limit",
         "Maximum pressure on the nameplate of the low side.",
         None,
         where="nameplates of evaporators, accumulators and crankcase: the lowest of them",
     )
-    relief_setting_Pa: Annotated[
-        float | Absent | None, OrNone(AbsolutePressure("1 bar a", "300 bar a", "relief valves of plants lie within it"))
-    ] = key(
+    relief_setting_Pa: Annotated[float | Absent | None, OrNone(PRESSURE_LIMIT)] = key(
         "relief_setting",
         "Pressure at which the relief valve of the high side opens.",
         None,

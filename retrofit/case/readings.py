@@ -7,9 +7,10 @@ from typing import Annotated
 from pydantic import Field
 
 from retrofit.case.compressor import CURRENT, PHASES, POWER_FACTOR, VOLTAGE
+from retrofit.case.dates import YesNo
 from retrofit.case.exchangers import FLOW, SPECIFIC_HEAT
 from retrofit.case.table import Items, Table, key
-from retrofit.case.values import Absent, AbsolutePressure, OrNone, Quantity, Text
+from retrofit.case.values import PRESSURE_LIMIT, Absent, AbsolutePressure, OrNone, Quantity, Text
 
 MOST_FAN_STEPS = 20
 _PRESSURE = Annotated[float | None, AbsolutePressure("0.01 bar a", "300 bar a", "gauges of plants lie within it")]
@@ -77,6 +78,11 @@ class Readings(Table):
     condenser_specific_heat_J_per_kgK: Annotated[float | None, SPECIFIC_HEAT] = key(
         "condenser_specific_heat", "Specific heat of what flows through the condenser.", None
     )
+    calibrate: Annotated[bool | None, YesNo()] = key(
+        "calibrate",
+        "Whether power read over modelled power is taken as losses of motor and drive, alike for every option.",
+        None,
+    )
     hours_per_day: Annotated[float | None, Quantity("hours per day", "0", "24", "a day has no more")] = key(
         "hours_per_day", "Hours that the compressors run in a day.", None
     )
@@ -97,7 +103,7 @@ class Controls(Table):
         None,
         where="scale of the low-pressure switch",
     )
-    high_pressure_cut_out_Pa: _SET = key(
+    high_pressure_cut_out_Pa: Annotated[float | Absent | None, OrNone(PRESSURE_LIMIT)] = key(
         "high_pressure_cut_out",
         "Pressure at which the high-pressure switch stops the compressor.",
         None,

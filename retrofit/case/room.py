@@ -6,6 +6,7 @@ from collections.abc import Mapping
 from typing import Annotated
 
 from retrofit.case.dates import YesNo
+from retrofit.case.numbers import Number
 from retrofit.case.table import Table, key
 from retrofit.case.values import Choice, Quantity, Text
 
@@ -25,6 +26,7 @@ OCCUPANCIES = ("institutional", "other")
 VENTILATIONS = ("none", "natural", "mechanical")
 _VOLUME = Quantity("volume", "1 m3", "10000000 m3", "rooms lie within it", example="6000 m3", shown="room volume")
 _AREA = Quantity("area", "0.5 m2", "1000000 m2", "rooms lie within it")
+_PEOPLE = Number(0, 100_000, "no room of a plant holds more", whole=True, example="4")
 _FLAG = Annotated[bool | None, YesNo()]
 
 
@@ -68,6 +70,16 @@ class Room(Table):
     comfort: _FLAG = key("comfort", "Whether the plant is for human comfort.", None, where="what the plant is for")
     ventilation: Annotated[str | None, Choice(VENTILATIONS)] = key(
         "ventilation", "How the room is ventilated.", None, where="on site: none, openings, or a fan"
+    )
+    emergency_exits: _FLAG = key("emergency_exits", "Whether the room has emergency exits.", None, where="on site")
+    people: Annotated[int | None, _PEOPLE] = key(
+        "people", "Most people in the room at one time.", None, where="owner: most people at one time"
+    )
+    refrigerated: _FLAG = key(
+        "refrigerated",
+        "Whether the room is used only to process or store goods under refrigeration.",
+        None,
+        where="what the room is for",
     )
     largest_circuit_kg: Annotated[
         float | None,

@@ -110,6 +110,7 @@ match = "mean"                   # refrigerants are compared at equal mean (or d
 # voltage = "400 V"
 # phases = 3
 # power_factor = 0.85
+# calibrate = true               # take power read over modelled power as losses of motor and drive, for every option
 # evaporator_in = "2 degC"       # air, water or brine
 # evaporator_out = "-3 degC"
 # evaporator_flow = "8 kg/s"
@@ -185,6 +186,9 @@ match = "mean"                   # refrigerants are compared at equal mean (or d
 # location = "II"                # I occupied space, II compressor outside it, III machinery room or open air,
 #                                  IV ventilated enclosure
 # below_ground = false
+# emergency_exits = true         # whether the room has emergency exits
+# people = 4                     # most people in it at one time
+# refrigerated = false           # whether it only processes or stores goods under refrigeration
 # comfort = false                # whether the plant is for human comfort
 # ventilation = "natural"        # none, natural or mechanical
 # largest_circuit = "80 kg"      # charge of the largest independent circuit today
@@ -197,11 +201,16 @@ match = "mean"                   # refrigerants are compared at equal mean (or d
 # ventilation = "1.5 m3/s"       # air flow of the emergency ventilation
 
 # [law]                          # tables of law are data, not advice: check the current text
-# jurisdiction = "EU"            # a name that the tables of law use
+# jurisdiction = "EU"            # EU or a member such as DE, GB, NI, US, US-CA; else other
 # date_of_change = "2027-04-01"
 # remaining_life = "8 years"     # that the plant runs after the change
 #| end = "2035-03-31"            # or the day it stops, instead of the remaining life
 # equipment = "supermarket"      # kind of equipment, as the tables name it
+# arrangement = "multipack"      # self-contained, movable plug-in, single split, multi split, double duct,
+#                                  multipack (compressors in parallel) or built on site
+# rated_capacity = "120 kW"      # of new equipment; if left out the duty is taken
+# cascade_primary = false        # whether it is the primary circuit of a cascade
+# safety_exception = false       # whether safety at the site rules out what the limit leaves, with evidence
 # hermetically_sealed = false    # and labelled so
 # leak_detection_system = true
 # annual_leak_rate = "15 %"      # of the charge

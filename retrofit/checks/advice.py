@@ -16,6 +16,7 @@ from retrofit.checks.answer import open_words, question_of
 from retrofit.checks.gates import cooling_reached
 from retrofit.study import Comparison, Entry, Family, Finding, Verdict
 from retrofit.study.bands import model_band, pair_band
+from retrofit.study.law import RowState
 from retrofit.units import UnitSystem, told
 
 GRAVE = ("danger", "warning", "unknown")  # levels of cautions that page one names
@@ -325,8 +326,8 @@ def _of(comparison: Comparison, designation: str) -> Entry:
 def _law_days(entry: Entry, now: datetime.date) -> Iterator[tuple[datetime.date, str]]:
     """Yield bans on gas that begin, or hold already at the start, while the plant runs with a refrigerant."""
     for row in entry.law.rows if entry.law else ():
-        if entry.law and row.gas and row.applies_from is not None and row.state != "unknown":
-            doubt = "" if row.state == "applies" else " It depends: see the section on law."
+        if entry.law and row.gas and row.applies_from is not None and row.state != RowState.UNKNOWN:
+            doubt = "" if row.state == RowState.APPLIES else " It depends: see the section on law."
             yield now if row.in_force(entry.law.start) else row.applies_from, f"{row.text}{doubt}"
 
 

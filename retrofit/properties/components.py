@@ -12,7 +12,7 @@ from retrofit.refrigerants import Refrigerant, find
 # Spelled differently in the property library than in the designation standard.
 LIBRARY_NAMES = {"R1224yd(Z)": "R1224YDZ"}
 # Refrigerants the property library (CoolProp 8.0.0) has no equation of state for.
-NOT_IN_LIBRARY = {"R1132a"}
+NOT_IN_LIBRARY = {"R1132a", "R13B1"}
 
 
 @dataclass(frozen=True)

@@ -20,7 +20,7 @@ GWP_BASES = {
 
 # An edition's own source: a component value from elsewhere is named in the note of the blend.
 _OWN_SOURCE = {"gwp_100yr_ar4": "IPCC2007", "gwp_100yr_ar5": "IPCC2013", "gwp_100yr_ar6": "IPCC2021"}
-_OZONE_DEPLETING = ("CFC", "HCFC")
+_OZONE_DEPLETING = ("CFC", "HCFC", "halon")
 _FLUORINATED_GASES = ("HFC", "PFC", "HFO", "HCFO")  # what annexes I and II of EU 2024/573 can list
 
 

@@ -10,6 +10,7 @@ from retrofit.report.prospect_rows import Options, missing_of, shown_name
 from retrofit.report.table import Cell, Group, Row, Table
 from retrofit.study import Comparison
 from retrofit.study.emissions import edition_of
+from retrofit.study.law_words import reason_text
 from retrofit.units import UnitSystem, format_number
 
 
@@ -104,7 +105,7 @@ def check_months(option: Prospect) -> tuple[float | None, str]:
         return None, "`jurisdiction` in [law], or a table for it"
     if law.leak_check_months:
         return float(law.leak_check_months), ""
-    return None, "; ".join(law.unknown)
+    return None, "; ".join(map(reason_text, law.leak_check_open))
 
 
 def _warming(options: Options) -> tuple[Row, ...]:

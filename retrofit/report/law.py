@@ -5,33 +5,85 @@ from __future__ import annotations
 import datetime
 from collections.abc import Iterable
 from dataclasses import dataclass
+from enum import StrEnum
 
+from retrofit.case import EU_MEMBERS
 from retrofit.checks.law import SUBJECTS
-from retrofit.report.gathering import basis_text, gathered, names
+from retrofit.report.gathering import gathered, names
 from retrofit.report.judging import spelled
 from retrofit.report.values import FIELDS, potential_text
 from retrofit.study import Comparison, Entry
-from retrofit.study.law import LawBasis, LawCheck, LawRow
+from retrofit.study.law import LawBasis, LawCheck, LawRow, RowState, Why
+from retrofit.study.law_words import (
+    DEFERENCE,
+    dates,
+    limit_text,
+    moment_text,
+    not_checked,
+    number_text,
+    problems,
+    reason_text,
+    source_text,
+)
 from retrofit.units import UnitSystem, format_number, stacked
 
 UNKNOWN = "unknown"
-LIMIT = ", limit "  # between a number and its limit
 NOTHING_HELD = "none in these tables"
+TODAY, CHANGE = "date of the legal check", "change of refrigerant"
+OUTLOOK = "Outlook: proposals and findings, not law in force"
+
+
+class Mark(StrEnum):
+    """What is said beside a cell of the table; the value is how the report words it."""
+
+    DEPENDS = "it depends"
+    NOT_VERIFIED = "not verified"
+
+
+@dataclass(frozen=True)
+class LawCell:
+    """A cell of the table, and what is said beside it."""
+
+    text: str
+    marks: tuple[Mark, ...] = ()
+
+    @property
+    def words(self) -> str:
+        """The cell with its remarks in words. [-]"""
+        return "; ".join((self.text, *self.marks))
 
 
 @dataclass(frozen=True)
 class LawLine:
-    """What one refrigerant has to reckon with from its first day on, as texts."""
+    """What one refrigerant meets from its first day on.
+
+    Attributes:
+        name, start, gwp, charge, co2e, co2e_expected: The refrigerant and its numbers, as texts.
+        leak_check, detection: Duties at the start.
+        strictest, following: The strictest ban in force at the start, and the next one.
+        missing: What is missing, as texts.
+    """
 
     name: str
     start: str
     gwp: str
     charge: str
     co2e: str
-    leak_check: str
-    detection: str
-    bans: tuple[str, ...]
+    co2e_expected: str
+    leak_check: LawCell
+    detection: LawCell
+    strictest: LawCell
+    following: LawCell
     missing: tuple[str, ...]
+
+
+@dataclass(frozen=True)
+class LawOutlook:
+    """What may come for one refrigerant: parts that a proposal would restrict, and parts that turn into TFA."""
+
+    name: str
+    restricted: str
+    turns_into_tfa: str
 
 
 @dataclass(frozen=True)
@@ -39,7 +91,7 @@ class Reading:
     """What a row of law says to some refrigerants.
 
     Attributes:
-        state: "applies", "depends" or "unknown".
+        state: "applies", "depends" or "unknown"; "outlook" for what is not law.
         figures: The refrigerants, by their numbers, as (numbers, refrigerants); a number may be empty.
         limits: The limits that the numbers stand against.
         reasons: Why it is open.
@@ -60,8 +112,10 @@ class LawItem:
     exceptions: str
     readings: tuple[Reading, ...]
     source: str
-    basis: str
+    edition: str
+    address: str
     checked: str
+    is_verified: bool
     table: str
 
 
@@ -73,21 +127,25 @@ class LawPart:
         facts: Jurisdiction, days and equipment as (what, value).
         deference: What no table replaces.
         problems: What is wrong with a table.
-        known: Jurisdictions there are tables for, if there is none for that of the case.
+        not_checked: That no table holds for the jurisdiction of the case; empty if one does.
+        not_held: Fields of law that no table holds.
         lines: One for each refrigerant.
+        outlook: What may come, a line for each refrigerant that it concerns; never law in force.
         subjects: The rows by subject.
         timeline: What begins and ends, as (day, what, for whom).
-        tables: The tables looked into, as (title, file, rows, checked, to be checked again by, remark).
+        tables: The tables looked into, as (title, file, rows, verified, read, review by, remark).
     """
 
     facts: tuple[tuple[str, str], ...]
     deference: str
     problems: tuple[str, ...]
-    known: str
+    not_checked: str
+    not_held: tuple[str, ...]
     lines: tuple[LawLine, ...]
+    outlook: tuple[LawOutlook, ...]
     subjects: tuple[tuple[str, tuple[LawItem, ...]], ...]
     timeline: tuple[tuple[str, str, str], ...]
-    tables: tuple[tuple[str, str, str, str, str, str], ...]
+    tables: tuple[tuple[str, ...], ...]
 
 
 def law_part(comparison: Comparison, units: UnitSystem) -> LawPart | None:
@@ -102,10 +160,12 @@ def law_part(comparison: Comparison, units: UnitSystem) -> LawPart | None:
         return None
     return LawPart(
         _facts(comparison, basis),
-        basis.deference,
-        basis.problems,
-        "" if basis.tables else ", ".join(basis.known),
+        DEFERENCE,
+        problems(basis),
+        not_checked(basis),
+        basis.not_held,
         law_lines(comparison, units),
+        outlook(comparison),
         _subjects(comparison),
         timeline(comparison, basis),
         _tables(basis),
@@ -113,7 +173,7 @@ def law_part(comparison: Comparison, units: UnitSystem) -> LawPart | None:
 
 
 def law_lines(comparison: Comparison, units: UnitSystem) -> tuple[LawLine, ...]:
-    """Return what each refrigerant has to reckon with: leak checks, detection, bans.
+    """Return what each refrigerant meets: leak checks, detection, bans.
 
     Args:
         comparison: An assessed result.
@@ -130,10 +190,12 @@ def _line(entry: Entry, check: LawCheck, units: UnitSystem) -> LawLine:
         "; ".join(_gwp(basis, value, len(check.gwp)) for basis, value in check.gwp.items()) or "not asked",
         _charge(check, units),
         "; ".join(_range(weight) for weight in check.co2e_t.values()) or "not asked",
+        "; ".join(_expected(weight) for weight in check.co2e_t.values()) or "not asked",
         _leak_check(check),
         _detection(check),
-        tuple(_ban(row) for row in sorted(check.rows, key=_begin) if row.gas) or (NOTHING_HELD,),
-        tuple(spelled(text) for text in check.unknown),
+        _ban(check.strictest),
+        _ban(check.next_ban),
+        tuple(spelled(reason_text(reason)) for reason in check.unknown),
     )
 
 
@@ -160,63 +222,125 @@ def _range(weight: tuple[float, float, float] | None) -> str:
     return f"{expected} ({low} to {high})" if low != high else expected
 
 
+def _expected(weight: tuple[float, float, float] | None) -> str:
+    return UNKNOWN if weight is None else _tonnes(weight[1])
+
+
 def _tonnes(value: float) -> str:
     """Return a weight of three digits, as the steps of the law need it. [t CO2e]"""
     return format_number(value, 0) if value >= 100.0 else f"{value:#.3g}".rstrip(".")
 
 
-def _leak_check(check: LawCheck) -> str:
-    """Return how often, at the start; what is open or cannot be told is said."""
+def _leak_check(check: LawCheck) -> LawCell:
+    """Return how often, at the start; what is open or not known is said."""
     rows = [row for row in check.rows_on("leak check") if row.in_force(check.start)]
-    if any(row.state == UNKNOWN for row in rows):
-        return UNKNOWN
-    if check.leak_check_months is None:
-        return "open" if rows else NOTHING_HELD
+    if check.leak_check_open:
+        return LawCell(UNKNOWN)
     strictest = [row for row in rows if row.value == check.leak_check_months]
-    open_ = "" if any(row.state == "applies" for row in strictest) else "; it depends"
-    rest = "; one row stays open" if any(row.value is None for row in rows) else ""
-    memory = "; from memory" if any(row.is_from_memory for row in strictest) else ""
-    return f"every {check.leak_check_months:g} months{open_}{rest}{memory}"
+    if check.leak_check_months is None or not strictest:
+        return LawCell(NOTHING_HELD)
+    return LawCell(f"every {check.leak_check_months:g} months", _marks(strictest))
 
 
-def _detection(check: LawCheck) -> str:
+def _detection(check: LawCheck) -> LawCell:
+    rows = check.rows_on("leak detection")
+    if not rows:
+        return LawCell(NOTHING_HELD)
+    row = max(rows, key=lambda item: (item.in_force(check.start), item.state == RowState.APPLIES))
+    later = "" if row.in_force(check.start) else f" from {row.applies_from}"
+    word = UNKNOWN if row.state == RowState.UNKNOWN else "compulsory"
+    return LawCell(f"{word}{later}", _marks([row]))
+
+
+def _marks(rows: Iterable[LawRow]) -> tuple[Mark, ...]:
+    """Return what is to be said beside a cell that rests on rows: the best of them counts."""
+    listed = list(rows)
     found = []
-    for row in check.rows_on("leak detection"):
-        word = {"applies": "compulsory", "depends": "it depends", "unknown": UNKNOWN}[row.state]
-        later = "" if row.in_force(check.start) else f" from {row.applies_from}"
-        found.append(f"{word}{later}{'; from memory' if row.is_from_memory else ''}")
-    return "; ".join(dict.fromkeys(found)) or NOTHING_HELD
+    if not any(row.state == RowState.APPLIES for row in listed) and any(
+        row.state == RowState.DEPENDS for row in listed
+    ):
+        found.append(Mark.DEPENDS)
+    if not all(row.is_verified for row in listed):
+        found.append(Mark.NOT_VERIFIED)
+    return tuple(found)
 
 
 def _begin(row: LawRow) -> datetime.date:
     return row.applies_from or datetime.date.max
 
 
-def _ban(row: LawRow) -> str:
-    gas = "any gas" if row.gas == "any" else "new gas"
-    gas += " not sold" if row.subject == "supply" else ""
+def _ban(row: LawRow | None) -> LawCell:
+    if row is None:
+        return LawCell(NOTHING_HELD)
+    doubt = f" ({UNKNOWN})" if row.state == RowState.UNKNOWN else ""
     until = f" to {row.applies_until}" if row.applies_until else ""
-    doubt = {"applies": "", "depends": "; it depends", "unknown": "; unknown"}[row.state]
-    return f"{gas} from {row.applies_from}{until}{doubt}{'; from memory' if row.is_from_memory else ''}"
+    return LawCell(f"{_banned(row)} from {row.applies_from}{until}{doubt}", _marks([row]))
+
+
+def _banned(row: LawRow) -> str:
+    if row.subject == "new equipment":
+        return f"new plant, GWP {row.gwp_limit:g} or more," if row.gwp_limit else "new plant"
+    sold = " not sold" if row.subject == "supply" else ""
+    return f"{'any gas' if row.gas == 'any' else 'new gas'}{sold}"
 
 
 def _facts(comparison: Comparison, basis: LawBasis) -> tuple[tuple[str, str], ...]:
     law = comparison.case.law
     rate = law.annual_leak_rate if law else None
     return (
-        ("Jurisdiction", basis.jurisdiction),
-        ("Tables looked at for", basis.on.isoformat()),
+        ("Jurisdiction", _jurisdiction(basis)),
+        ("Date of the legal check", basis.on.isoformat()),
         ("Change", _day(basis.date_of_change, "not given: today is taken")),
         ("End of the plant", _day(basis.end, "not given: every later date is shown")),
         ("Equipment", (law.equipment if law else None) or "not given"),
+        ("Arrangement", (law.arrangement if law else None) or "not given"),
         ("Hermetically sealed", "yes" if law and law.hermetically_sealed else "no"),
         ("Leak detection system", "yes" if law and law.leak_detection_system else "no"),
         ("Leak rate a year", "not given" if rate is None else f"{100.0 * rate:.3g}\N{NO-BREAK SPACE}%"),
     )
 
 
+def _jurisdiction(basis: LawBasis) -> str:
+    """Return whose law it is, and whose law holds there too."""
+    own, *wider = basis.areas
+    name = EU_MEMBERS.get(own, {"GB": "Great Britain", "NI": "Northern Ireland"}.get(own, ""))
+    as_ = f", by the tables for {' and '.join(wider)}" if wider else ""
+    return f"{own}{f' ({name})' if name else ''}{as_}"
+
+
 def _day(day: datetime.date | None, missing: str) -> str:
     return missing if day is None else day.isoformat()
+
+
+# Outlook
+
+
+def outlook(comparison: Comparison) -> tuple[LawOutlook, ...]:
+    """Return what may come for each refrigerant that a proposal or a finding concerns; none of it is in force.
+
+    Args:
+        comparison: An assessed result.
+    """
+    checks = [(entry, entry.law.rows_on("proposal")) for entry in comparison.entries if entry.law]
+    return tuple(
+        LawOutlook(
+            entry.refrigerant.display_name,
+            _parts(row for row in rows if row.value is None),
+            _parts(row for row in rows if row.value is not None),
+        )
+        for entry, rows in checks
+        if rows
+    )
+
+
+def _parts(rows: Iterable[LawRow]) -> str:
+    """Return the components that rows name, with their share by mass and what the row gives for each."""
+    found = []
+    for row in rows:
+        given = "" if row.value is None else f" ({row.value:g} {row.unit})"
+        shares = [item for item in row.measured if item.measure == "share" and item.value]
+        found += [spelled(f"{number_text(item)}{given}") for item in shares]
+    return "; ".join(found) or "none in these tables"
 
 
 # Rows
@@ -232,7 +356,11 @@ def _subjects(comparison: Comparison) -> tuple[tuple[str, tuple[LawItem, ...]], 
     subjects: dict[str, list[LawItem]] = {}
     for pairs in ordered:
         subjects.setdefault(pairs[0][1].subject, []).append(_item(pairs))
-    return tuple((f"{name[:1].upper()}{name[1:]}", tuple(items)) for name, items in subjects.items())
+    return tuple((_heading(name), tuple(items)) for name, items in subjects.items())
+
+
+def _heading(subject: str) -> str:
+    return OUTLOOK if subject == "proposal" else f"{subject[:1].upper()}{subject[1:]}"
 
 
 def _place(row: LawRow) -> tuple[int, datetime.date]:
@@ -241,44 +369,40 @@ def _place(row: LawRow) -> tuple[int, datetime.date]:
 
 def _item(pairs: list[tuple[Entry, LawRow]]) -> LawItem:
     row = pairs[0][1]
-    said = [(entry, *_parted(item.measured), _reasons(item), item.state) for entry, item in pairs]
-    kinds = gathered((entry, (state, limits, reasons)) for entry, _, limits, reasons, state in said)
+    said = [(entry, _kind(item), "; ".join(map(number_text, item.measured))) for entry, item in pairs]
+    kinds = gathered((entry, kind) for entry, kind, _ in said)
     return LawItem(
-        row.dates,
+        dates(row),
         spelled(row.text),
         spelled(row.exceptions),
-        tuple(
-            Reading(state, _figures(kind, said), limits, tuple(map(spelled, reasons)))
-            for kind in kinds
-            for state, limits, reasons in (kind,)
-        ),
-        row.source,
-        basis_text(row.basis, row.confidence),
+        tuple(Reading(kind[0], _figures(kind, said), kind[1], tuple(map(spelled, kind[2]))) for kind in kinds),
+        source_text(row),
+        row.edition,
+        row.address,
         row.date_checked.isoformat(),
+        row.is_verified,
         row.table,
     )
 
 
-Said = tuple[Entry, str, str, tuple[str, ...], str]  # numbers, limits, reasons, state
+Kind = tuple[str, str, tuple[str, ...]]  # state, limits, reasons
 
 
-def _figures(kind: tuple[str, str, tuple[str, ...]], said: list[Said]) -> tuple[tuple[str, str], ...]:
-    """Return the numbers of the refrigerants that a row says the same to."""
-    found = gathered(
-        (entry, numbers) for entry, numbers, limits, reasons, state in said if (state, limits, reasons) == kind
+def _kind(row: LawRow) -> Kind:
+    """Return what a row says to a refrigerant, without its numbers, which stand beside it anyway."""
+    state = "outlook" if row.subject == "proposal" and row.state == RowState.APPLIES else row.state.value
+    limits = "; ".join(limit_text(item.limit) for item in row.measured if item.limit)
+    reasons = tuple(
+        "it depends on the charge" if reason.why == Why.STRADDLES and not reason.keys else reason_text(reason)
+        for reason in row.reasons
     )
+    return state, limits, reasons
+
+
+def _figures(kind: Kind, said: list[tuple[Entry, Kind, str]]) -> tuple[tuple[str, str], ...]:
+    """Return the numbers of the refrigerants that a row says the same to."""
+    found = gathered((entry, numbers) for entry, own, numbers in said if own == kind)
     return tuple((numbers, names(entries)) for numbers, entries in found.items())
-
-
-def _parted(measured: str) -> tuple[str, str]:
-    """Return the numbers of a plant and the limits they stand against, which are the same for every refrigerant."""
-    parts = [part.partition(LIMIT) for part in measured.split("; ")] if measured else []
-    return "; ".join(part[0] for part in parts), "; ".join(part[2] for part in parts if part[2])
-
-
-def _reasons(row: LawRow) -> tuple[str, ...]:
-    """Return why a row is open, without numbers that stand beside it anyway."""
-    return tuple(reason.removesuffix(f": {row.measured}") if row.measured else reason for reason in row.reasons)
 
 
 # Time
@@ -291,12 +415,12 @@ def timeline(comparison: Comparison, basis: LawBasis) -> tuple[tuple[str, str, s
         comparison: An assessed result.
         basis: Its basis of law.
     """
-    found: dict[tuple[datetime.date, str], list[Entry]] = {(basis.on, "the tables are looked at"): []}
+    found: dict[tuple[datetime.date, str], list[Entry]] = {(basis.on, TODAY): []}
     if basis.date_of_change is not None:
-        found[basis.date_of_change, "the change of refrigerant"] = []
+        found[basis.date_of_change, CHANGE] = []
     for entry in comparison.entries:
         for moment in entry.law.timeline if entry.law else ():
-            found.setdefault((moment.day, moment.text), []).append(entry)
+            found.setdefault((moment.day, moment_text(moment)), []).append(entry)
     ordered = sorted(found.items(), key=lambda item: item[0][0])
     return tuple((day.isoformat(), spelled(text), _whom(entries, comparison)) for (day, text), entries in ordered)
 
@@ -306,7 +430,7 @@ def _whom(entries: Iterable[Entry], comparison: Comparison) -> str:
     return "all refrigerants here" if len(listed) == len(comparison.entries) else names(listed)
 
 
-def _tables(basis: LawBasis) -> tuple[tuple[str, str, str, str, str, str], ...]:
+def _tables(basis: LawBasis) -> tuple[tuple[str, ...], ...]:
     found = []
     for table in basis.tables:
         remarks = [
@@ -314,10 +438,11 @@ def _tables(basis: LawBasis) -> tuple[tuple[str, str, str, str, str, str], ...]:
             for word, is_so in (
                 ("the user’s own, beside the case file", table.is_own),
                 ("kept for the past", table.is_history),
-                ("past its review", table.review_by < basis.on),
+                ("past its review: gives no answer", table.is_past_review),
             )
             if is_so
         ]
-        dates = table.checked.isoformat(), table.review_by.isoformat()
-        found.append((table.title, table.file, str(table.rows), *dates, "; ".join(remarks) or "–"))
+        days = table.checked.isoformat(), table.review_by.isoformat()
+        counts = str(table.rows), str(table.verified)
+        found.append((table.title, table.file, *counts, *days, "; ".join(remarks) or "–"))
     return tuple(found)

@@ -12,10 +12,12 @@ from typing import Any
 from retrofit.checks.survey import OpenKey, survey
 from retrofit.properties import Grade
 from retrofit.refrigerants import GWP_BASES, Refrigerant
+from retrofit.report.machine_agreement import agreement_json
 from retrofit.study import Baseline, Comparison, Component, Entry, Finding, Installed, Performance, Point
 from retrofit.study.bands import bands_of
 from retrofit.study.compare import RATIOS
-from retrofit.study.law import LawCheck
+from retrofit.study.law import LawBasis, LawCheck, LawRow, Reason
+from retrofit.study.law_words import DEFERENCE, line, moment_text, problems, reason_text
 from retrofit.units import SI, all_told
 
 # Unit of the SI number of each kind of quantity that a component is measured by.
@@ -63,7 +65,8 @@ def comparison_json(comparison: Comparison) -> dict[str, Any]:
         "defaults": [asdict(default) for default in case.defaults],
         "open": [_open(item) for item in survey(comparison)],
         "baseline": _baseline(comparison.baseline),
-        "law": _plain(asdict(comparison.law)) if comparison.law else None,
+        **agreement_json(comparison),
+        "law": _law_basis(comparison.law),
     }
     return all_told(found, SI)
 
@@ -88,8 +91,39 @@ def _law(found: LawCheck | None) -> dict[str, Any] | None:
     """Return what the tables of law say, each row with its paragraph for a reader."""
     if found is None:
         return None
-    rows = [_plain(asdict(row)) | {"line": row.line} for row in found.rows]
-    return {**_plain(asdict(found)), "rows": rows}
+    rows = [_law_row(row) for row in found.rows]
+    moments = [
+        {
+            "day": moment.day.isoformat(),
+            "change": moment.change,
+            "row": moment.row.id if moment.row else None,
+            "text": moment_text(moment),
+        }
+        for moment in found.timeline
+    ]
+    bans = {"strictest_ban": found.strictest, "next_ban": found.next_ban}
+    return {
+        **_plain(asdict(found)),
+        "rows": rows,
+        "timeline": moments,
+        "unknown": [_reason(reason) for reason in found.unknown],
+        **{key: row.id if row else None for key, row in bans.items()},
+    }
+
+
+def _law_row(row: LawRow) -> dict[str, Any]:
+    reasons = [_reason(reason) for reason in row.reasons]
+    return {**_plain(asdict(row)), "verified": row.is_verified, "reasons": reasons, "line": line(row)}
+
+
+def _reason(reason: Reason) -> dict[str, Any]:
+    return {**_plain(asdict(reason)), "text": reason_text(reason)}
+
+
+def _law_basis(found: LawBasis | None) -> dict[str, Any] | None:
+    if found is None:
+        return None
+    return {**_plain(asdict(found)), "problems": list(problems(found)), "deference": DEFERENCE}
 
 
 def _plain(value: Any) -> Any:
@@ -135,7 +169,8 @@ def _plant(found: Installed | None) -> dict[str, Any] | None:
         return None
     return asdict(found.full) | {
         "same_cooling": asdict(found.same_cooling),
-        "operation": asdict(found.operation),
+        "operation": asdict(found.operation) | {"mean_electric_W": found.mean_electric_W},
+        "electric_W": found.electric_W,
         "is_covered": found.is_covered,
         "film_factors": list(found.film_factors),
         "cooling_with_equal_films_W": found.cooling_with_equal_films_W,

@@ -6,14 +6,16 @@ from collections.abc import Iterable
 from dataclasses import dataclass, replace
 
 from retrofit.case import Case
+from retrofit.checks.room.places import code_of
 from retrofit.report.asked import Asked, asked_texts, shared_texts
 from retrofit.report.classes import ClassBlock, Step, class_blocks, steps
 from retrofit.report.gathering import basis_text, gathered, nameless, names
 from retrofit.study import Comparison, Entry
-from retrofit.study.room import UNKNOWN, RoomCheck, WorkedLimit
+from retrofit.study.room import CONDITIONS, UNKNOWN, RoomCheck, WorkedLimit
 from retrofit.units import UnitSystem, all_told, stacked
 
 NOT_GIVEN = "not given"
+NO_LIMIT = "none"
 ROLES = {
     "limit": "It counts.",
     "alternative": "Shown beside the limits; it decides nothing.",
@@ -73,6 +75,7 @@ class RoomPart:
         facts: The room as (what, value).
         charge_of: Whose charge it is, in words.
         lines: One for each refrigerant.
+        conditions: What holds instead of a limit, by refrigerants.
         limits: Every method with its working.
         questions, machinery: What is asked; `machinery` is empty where nothing asks for a machinery room.
         steps: Changes of safety class.
@@ -83,6 +86,7 @@ class RoomPart:
     facts: tuple[tuple[str, str], ...]
     charge_of: str
     lines: tuple[RoomLine, ...]
+    conditions: tuple[tuple[str, tuple[str, ...]], ...]
     limits: tuple[LimitBlock, ...]
     questions: tuple[Asked, ...]
     machinery: tuple[Asked, ...]
@@ -114,6 +118,7 @@ def room_part(comparison: Comparison, units: UnitSystem) -> RoomPart | None:
         _facts(comparison.case, units),
         charge_of_text(checks[0][1]) if checks else "",
         room_lines(comparison, units),
+        condition_lines(comparison, units),
         _limit_blocks(checks, units),
         asked_texts(((entry, item) for entry, check in checks for item in check.questions), len(checks), units),
         asked_texts(((entry, item) for entry, check in checks for item in check.machinery_room), len(checks), units),
@@ -128,7 +133,10 @@ def code_text(case: Case) -> str:
     Args:
         case: The case.
     """
-    code = case.law.code if case.law else None
+    code, place = (case.law.code, case.law.jurisdiction) if case.law else (None, None)
+    usual = code_of(place)
+    if code is None and usual:
+        return f"By {usual}, usual where the plant stands ({place}): `code` in [law] would choose another."
     if code is None:
         return "By ASHRAE 15 and by EN 378, which have to agree: `code` in [law] does not choose."
     return "By ASHRAE 15 and by EN 378; the stricter counts." if code == "both" else f"By {code}, as the case chooses."
@@ -181,8 +189,8 @@ def _line(entry: Entry, check: RoomCheck, units: UnitSystem) -> RoomLine:
         entry.refrigerant.safety_class.text or "not stated",
         mass_text(check.expected_kg, units),
         stacked(*(_span(check, system) for system in units.systems)),
-        mass_text(limit.limit_kg if limit else None, units),
-        units.text("mass", check.margin_kg, signed=True, missing=UNKNOWN),
+        mass_text(limit.limit_kg, units) if limit else NO_LIMIT if check.verdict == CONDITIONS else UNKNOWN,
+        units.text("mass", check.margin_kg, signed=True, missing=NO_LIMIT if check.verdict == CONDITIONS else UNKNOWN),
         check.verdict,
         _why(entry, check),
     )
@@ -192,13 +200,35 @@ def _why(entry: Entry, check: RoomCheck) -> str:
     """Return which limit decides, what sets it and what is doubtful about it; of an unknown what is missing."""
     limit = check.deciding
     missing = f"Missing: {nameless(entry, '; '.join(check.unknown_because))}." if check.unknown_because else ""
+    instead = _instead(check)
     if limit is None:
-        return missing or "No limit is known."
+        return " ".join(text for text in (instead, missing) if text) or "No limit is known."
     said = [f"{limit.code_family}, {limit.title[:1].lower()}{limit.title[1:]}; set by the {limit.decided_by}"]
     said += [nameless(entry, flag) for flag in limit.flags]
     if limit.basis == "memory" and not any("the rule is from memory" in flag for flag in limit.flags):
         said.append("the rule is from memory")
-    return " ".join([*(f"{text[:1].upper()}{text[1:]}." for text in said), missing]).strip()
+    return " ".join([*(f"{text[:1].upper()}{text[1:]}." for text in said), instead, missing]).strip()
+
+
+def _instead(check: RoomCheck) -> str:
+    """Return which rules set no limit of charge; nothing where every rule sets one."""
+    families = {limit.code_family for limit in check.limits if limit.role == "limit" and limit.unlimited_because}
+    return f"No limit of charge by {' and '.join(sorted(families))}, but conditions." if check.conditions else ""
+
+
+def condition_lines(comparison: Comparison, units: UnitSystem) -> tuple[tuple[str, tuple[str, ...]], ...]:
+    """Return what holds where no charge is set: refrigerants, and the conditions they share.
+
+    Args:
+        comparison: An assessed result.
+        units: The reader's units.
+    """
+    alone = (
+        (entry, tuple(nameless(entry, text) for text in all_told(entry.room, units).conditions))
+        for entry in comparison.entries
+        if entry.room is not None and entry.room.conditions
+    )
+    return tuple((names(entries), texts) for texts, entries in gathered(alone).items())
 
 
 def _facts(case: Case, units: UnitSystem) -> tuple[tuple[str, str], ...]:
@@ -214,6 +244,9 @@ def _facts(case: Case, units: UnitSystem) -> tuple[tuple[str, str], ...]:
             ("Access", f"category {access}" if access else NOT_GIVEN),
             ("Location", f"class {location}" if location else NOT_GIVEN),
             ("Below ground", _flag(room.below_ground)),
+            ("Emergency exits", _flag(room.emergency_exits)),
+            ("People in it", NOT_GIVEN if room.people is None else f"{room.people}"),
+            ("Only for refrigerated process or storage", _flag(room.refrigerated)),
             ("For comfort", _flag(room.comfort)),
             ("Occupancy", room.occupancy or NOT_GIVEN),
             ("Factory-sealed", _flag(room.sealed)),
@@ -256,13 +289,19 @@ def _limit_blocks(checks: Iterable[tuple[Entry, RoomCheck]], units: UnitSystem) 
 def _limit_line(entry: Entry, limit: WorkedLimit, units: UnitSystem) -> LimitLine:
     return LimitLine(
         "",
-        mass_text(limit.limit_kg, units),
+        NO_LIMIT if limit.unlimited_because else mass_text(limit.limit_kg, units),
         limit.decided_by,
-        tuple(nameless(entry, line) for line in limit.lines),
+        (*(nameless(entry, line) for line in limit.lines), *_no_limit_lines(limit)),
         tuple(nameless(entry, text) for text in limit.unknown_because),
         nameless(entry, limit.open_because),
         tuple(nameless(entry, text) for text in limit.flags),
     )
+
+
+def _no_limit_lines(limit: WorkedLimit) -> tuple[str, ...]:
+    if not limit.unlimited_because:
+        return ()
+    return (f"no limit of charge: {limit.unlimited_because}", *(f"instead: {text}" for text in limit.conditions))
 
 
 def _block(limit: WorkedLimit, lines: list[tuple[Entry, LimitLine]]) -> LimitBlock:

@@ -2,23 +2,19 @@
 
 from __future__ import annotations
 
-import re
-
-from retrofit.report.law import NOTHING_HELD, law_lines, timeline
-from retrofit.report.room import charge_of_text, code_text, has_room, room_lines
+from retrofit.report.law import NOTHING_HELD, LawCell, Mark, law_lines, outlook
+from retrofit.report.room import charge_of_text, code_text, condition_lines, has_room, room_lines
 from retrofit.report.terminal_plant import Emphasis, row_names
 from retrofit.report.text_table import Column, paragraph, text_table
 from retrofit.study import Comparison, Entry
-from retrofit.study.law import LawBasis
+from retrofit.study.law import Change, LawBasis
+from retrofit.study.law_words import DEFERENCE, NOT_VERIFIED, not_checked, problems, reason_text
 from retrofit.study.room import UNKNOWN
 from retrofit.units import UnitSystem
 
-# Remarks of the report as marks, which are told under the table.
-MARKS = {
-    "; from memory": " †",
-    "; one row stays open": " ‡",
-    "; it depends": " §",
-}
+# Remarks of the report as marks, explained under the table.
+MARKS = {Mark.NOT_VERIFIED: "†", Mark.DEPENDS: "§"}
+MEANINGS = {Mark.NOT_VERIFIED: NOT_VERIFIED, Mark.DEPENDS: "it depends: see the report"}
 NO_ROW = "no row"
 NO_ROW_MEANS = f"{NO_ROW}: not in these tables, which is not to say that there is no rule"
 
@@ -53,6 +49,15 @@ def room_text(comparison: Comparison, units: UnitSystem, columns: int, strong: E
             paragraph(rules.replace("`", ""), columns),
             text_table([column for column, _ in table], rows),
             *(paragraph(text, columns, indent="  ", first="") for text in said),
+            *(
+                paragraph(
+                    f"Instead of a limit for {who}, each to be shown: {'; '.join(texts)}.",
+                    columns,
+                    indent="  ",
+                    first="",
+                )
+                for who, texts in condition_lines(comparison, units)
+            ),
         ]
     )
 
@@ -69,7 +74,7 @@ def law_text(comparison: Comparison, units: UnitSystem, columns: int, strong: Em
     basis = comparison.law
     if basis is None:
         return ""
-    heading = strong(f"Law: what the tables for {basis.jurisdiction} ask, today and from the day of the change")
+    heading = strong(f"Law: duties and bans by the tables for {basis.jurisdiction}, today and from the date of change")
     entries = [entry for entry in comparison.entries if entry.law is not None]
     table = [_law_table(comparison, entries, units)] if entries else []
     said = [*map(_marks_used, table), *_remarks(comparison, basis)]
@@ -81,10 +86,11 @@ def _law_table(comparison: Comparison, entries: list[Entry], units: UnitSystem) 
     table = [
         (Column("", "", is_words=True), row_names(entries)),
         (Column("GWP", ""), [line.gwp for line in lines]),
-        (Column("Weight", "t CO2e"), [re.sub(r" \([^)]*\)", "", line.co2e) for line in lines]),
+        (Column("Charge", "t CO2e"), [line.co2e_expected for line in lines]),
         (Column("Leak checks", "", is_words=True), [_short(line.leak_check) for line in lines]),
         (Column("Detection", "", is_words=True), [_short(line.detection) for line in lines]),
-        (Column("First ban", "", is_words=True), [_short(line.bans[0]) for line in lines]),
+        (Column("Ban in force", "", is_words=True), [_short(line.strictest) for line in lines]),
+        (Column("Next ban", "", is_words=True), [_short(line.following) for line in lines]),
     ]
     rows = [list(row) for row in zip(*(cells for _, cells in table), strict=True)]
     return text_table([column for column, _ in table], rows)
@@ -93,34 +99,38 @@ def _law_table(comparison: Comparison, entries: list[Entry], units: UnitSystem) 
 def _marks_used(table: str) -> str:
     """Return what the marks in a table mean; empty if it has none."""
     used = [NO_ROW_MEANS] if NO_ROW in table else []
-    used += [f"{mark.strip()} {words.removeprefix('; ')}" for words, mark in MARKS.items() if mark in table]
+    used += [f"{mark} {MEANINGS[name]}" for name, mark in MARKS.items() if mark in table]
     return f"{'; '.join(used)}." if used else ""
 
 
-def _short(text: str) -> str:
+def _short(cell: LawCell) -> str:
     """Return a cell of the report with marks in place of its remarks."""
-    for words, mark in MARKS.items():
-        text = text.replace(words, mark)
-    return text.replace(NOTHING_HELD, NO_ROW)
+    text = NO_ROW if cell.text == NOTHING_HELD else cell.text
+    return " ".join((text, *(MARKS[mark] for mark in cell.marks)))
 
 
 def _remarks(comparison: Comparison, basis: LawBasis) -> list[str]:
     """Return what stands under the table: dates, what is missing, the tables and their dates, and who decides."""
     found = []
     if not basis.tables:
-        found.append(f"Unknown: there is no table for {basis.jurisdiction}; there are for {', '.join(basis.known)}.")
-    ahead = [(day, about) for day, text, about in timeline(comparison, basis) if text.startswith("begins") and about]
-    days = sorted({day for day, _ in ahead})
+        found.append(f"{not_checked(basis)}.")
+    moments = (moment for entry in comparison.entries if entry.law for moment in entry.law.timeline)
+    days = sorted({moment.day.isoformat() for moment in moments if moment.change == Change.BEGINS})
     if days:
-        found.append(f"Something begins on {', '.join(days)}: see the report.")
-    missing = dict.fromkeys(text for entry in comparison.entries if entry.law for text in entry.law.unknown)
-    if missing:
-        found.append(f"{UNKNOWN.capitalize()}: {'; '.join(missing)}.")
-    found += [f"{problem}." for problem in basis.problems]
+        found.append(f"New rules apply from {', '.join(days)}: see the report.")
+    reasons = dict.fromkeys(reason for entry in comparison.entries if entry.law for reason in entry.law.unknown)
+    if reasons:
+        found.append(f"{UNKNOWN.capitalize()}: {'; '.join(map(reason_text, reasons))}.")
+    touched = [item.name for item in outlook(comparison)]
+    if touched:
+        found.append(f"Outlook, not law: PFAS proposal or TFA concern {', '.join(touched)}; see the report.")
+    found += [f"{problem}." for problem in problems(basis)]
     if basis.tables:
-        checked = "; ".join(f"{table.file}, checked {table.checked}" for table in basis.tables)
+        checked = "; ".join(f"{table.file}, read {table.checked}" for table in basis.tables)
         found.append(f"Tables: {checked}.")
-    return [*found, basis.deference]
+    if basis.not_held:
+        found.append(f"Not held: {'; '.join(basis.not_held)}.")
+    return [*found, DEFERENCE]
 
 
 def _said(pairs: list[tuple[str, str]]) -> list[str]:

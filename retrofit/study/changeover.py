@@ -19,6 +19,7 @@ from retrofit.study.draws import today_rows
 from retrofit.study.hardware.numbers import HardwareNumbers
 from retrofit.study.installed import ExistingPlant, machine_at
 from retrofit.study.operating import balanced
+from retrofit.study.performance import electric_W
 from retrofit.study.practice import practice
 from retrofit.study.result import Comparison, Entry, FloatArray, Performance
 from retrofit.study.saturation import saturation_table
@@ -122,7 +123,7 @@ class Expected:
         name: "milder", "design", "hottest" (the hottest day of the case), "hotter" (one taken) or "today".
         T_inlet_K: Temperature of air, water or brine there.
         p_evap_Pa, p_cond_Pa: Pressures, absolute.
-        T_discharge_K, power_W, current_A: At the compressor; a current None if it cannot be told.
+        T_discharge_K, power_W, current_A: At the compressor, the power electrical; a current None if it cannot be told.
         is_held: Whether the control of head pressure holds the condensing pressure up.
         reason: Why nothing is known; empty otherwise.
     """
@@ -318,25 +319,32 @@ def _at_inlets(
             continue
         readings = {quantity: getattr(every, quantity)[place] for quantity in READ}
         is_held = float(every.T_cond_dew_K[place, BASE]) <= held_dew_K + CLOSE_K
-        expected.append(replace(_windows(numbers, bands, name, T_K, readings, drawn), is_held=is_held))
+        expected.append(replace(_windows(plant.case, numbers, bands, name, T_K, readings, drawn), is_held=is_held))
     return tuple(expected)
 
 
 def _windows(
-    numbers: HardwareNumbers, bands: Bands, name: str, T_K: float, readings: Mapping[str, FloatArray], drawn: slice
+    case: Case,
+    numbers: HardwareNumbers,
+    bands: Bands,
+    name: str,
+    T_K: float,
+    readings: Mapping[str, FloatArray],
+    drawn: slice,
 ) -> Expected:
     """Return what is expected of each reading, wide enough for its inputs and for the model."""
     at_design = numbers.current_A.new
     # Motor current goes with power, as everywhere in the hardware.
     per_watt = None if at_design is None else at_design / numbers.new.design.power_W
     p_evap, p_cond, T_discharge, power = (readings[quantity] for quantity in READ)
+    electric = electric_W(case, power)
     return Expected(
         name,
         T_K,
         p_evap_Pa=_window(p_evap, drawn, bands.pressure * p_evap[BASE]),
         p_cond_Pa=_window(p_cond, drawn, bands.pressure * p_cond[BASE]),
         T_discharge_K=_window(T_discharge, drawn, bands.T_discharge_K),
-        power_W=_window(power, drawn, bands.power * power[BASE]),
+        power_W=_window(electric, drawn, bands.power * electric[BASE]),
         current_A=None if per_watt is None else _window(power * per_watt, drawn, bands.power * power[BASE] * per_watt),
     )
 

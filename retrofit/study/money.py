@@ -14,6 +14,7 @@ from numpy.typing import ArrayLike
 from retrofit.case import Case
 from retrofit.study.emissions import Tewi, leaked_kg_per_year
 from retrofit.study.first_cost import FirstCost, levy_per_kg, price_of
+from retrofit.study.law_words import reason_text
 from retrofit.study.plan import Plan, Use
 from retrofit.study.spread import FloatArray, Pick, Spread, at, low_base_high, single
 
@@ -97,7 +98,7 @@ def _leak_checks(plan: Plan) -> tuple[float | None, str]:
         return None, "`jurisdiction` in [law], or a table for it"
     if plan.law.leak_check_months:
         return MONTHS / plan.law.leak_check_months, ""
-    reasons = "; ".join(plan.law.unknown)
+    reasons = "; ".join(map(reason_text, plan.law.leak_check_open))
     return (None, f"time between leak checks: {reasons}") if reasons else (0.0, "")
 
 

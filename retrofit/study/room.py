@@ -7,7 +7,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-BELOW, ABOVE, UNKNOWN = "below the limit", "above the limit", "unknown"
+BELOW, ABOVE, UNKNOWN, CONDITIONS = "below the limit", "above the limit", "unknown", "under conditions"
 
 
 @dataclass(frozen=True)
@@ -17,19 +17,22 @@ class WorkedLimit:
     Attributes:
         method: Short name, the same everywhere; limits of one method are candidates for the same one.
         title: The method, for a reader.
-        code_family: "ASHRAE 15", "EN 378", "ISO 5149" or "IEC 60335-2-40".
+        code_family: "ASHRAE 15", "EN 378", "ISO 5149", or the product standard.
         edition: Edition that the rule is taken from.
         role: "limit", or "alternative" and "product standard", which are shown and decide nothing.
         formula, symbols: The rule, and what each letter is, with unit.
         lines: The working, with numbers and units.
-        limit_kg: The limit; None where `unknown_because` says why.
+        limit_kg: The limit; None where `unknown_because` says why, or where there is none.
         decided_by: The input that sets it.
         unknown_because: What is missing, each with the key or value to give.
         open_because: Why the standard may allow more than `limit_kg`; empty if it does not.
         open_up_to_kg: Up to which charge that may be; None without a bound.
+        open_keys: Keys of [room] left out that would settle which row or rule holds.
         flags: What is from memory, unresolved or left out.
         source, basis: Where the rule comes from: "read" or "memory".
         applies_because: Why the rule is taken here.
+        unlimited_because: Why the rule sets no limit of charge here; empty where it sets one.
+        conditions: What it asks for instead.
     """
 
     method: str
@@ -49,6 +52,9 @@ class WorkedLimit:
     applies_because: str
     open_because: str = ""
     open_up_to_kg: float | None = None
+    unlimited_because: str = ""
+    conditions: tuple[str, ...] = ()
+    open_keys: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True)
@@ -111,16 +117,17 @@ class RoomCheck:
     """The charge of one refrigerant against the room.
 
     Attributes:
-        code: The code family that the case chooses; empty if it chooses none.
+        code: The code family that the case chooses, or that is usual in its jurisdiction; empty if neither is said.
         lowest_kg, expected_kg, highest_kg: Charge of the largest independent circuit; None if not known.
         charge_of: What that is the charge of: "largest circuit", "whole plant" or "".
         limits: Every limit with its working.
         deciding: The smallest limit that decides, None if none does.
         margin_kg: Deciding limit less the highest charge; None if either is not known.
-        verdict: "below the limit", "above the limit" or "unknown".
+        verdict: "below the limit", "above the limit", "unknown", or "under conditions" where no charge is set.
         unknown_because: What is missing where the verdict is unknown.
         questions: What the code family would ask about.
-        machinery_room: The same of a machinery room.
+        conditions: What holds instead, where a rule sets no limit of charge.
+        machinery_room: The same as `questions`, of a machinery room.
         lists: What the safety class asks to look at.
         change: The change of safety class; None for the refrigerant in the plant.
     """
@@ -136,6 +143,7 @@ class RoomCheck:
     verdict: str
     unknown_because: tuple[str, ...]
     questions: tuple[Question, ...]
+    conditions: tuple[str, ...]
     machinery_room: tuple[Question, ...]
     lists: tuple[ClassList, ...]
     change: ClassChange | None

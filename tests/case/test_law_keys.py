@@ -7,7 +7,8 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from retrofit.case.dates import day_of
-from retrofit.case.law import CODES, EQUIPMENT
+from retrofit.case.jurisdictions import EU_MEMBERS, HINTS, JURISDICTIONS, areas
+from retrofit.case.law import ARRANGEMENTS, CODES, EQUIPMENT
 from retrofit.errors import QuantityError
 
 START = """\
@@ -83,7 +84,16 @@ def test_without_the_table_there_is_no_law(case):
         ("leak_detection_system = 1", "law.leak_detection_system", "true or false"),
         ('annual_leak_rate = "120 %"', "law.annual_leak_rate", "0 % to 100 %"),
         ('code = "EN378"', "law.code", '"EN 378"'),
-        ('jurisdiction = ""', "law.jurisdiction", "1 to 40"),
+        ('jurisdiction = ""', "law.jurisdiction", '"other"'),
+        ('jurisdiction = "Germany"', "law.jurisdiction", 'did you mean "DE"'),
+        ('jurisdiction = "Texas"', "law.jurisdiction", 'did you mean "US"'),
+        ('jurisdiction = "UK"', "law.jurisdiction", 'did you mean "GB"'),
+        ('jurisdiction = "Northern Ireland"', "law.jurisdiction", 'did you mean "NI"'),
+        ('jurisdiction = "eu"', "law.jurisdiction", 'did you mean "EU"'),
+        ('jurisdiction = "Switzerland"', "law.jurisdiction", 'did you mean "other"'),
+        ('jurisdiction = "California"', "law.jurisdiction", 'did you mean "US-CA"'),
+        ('arrangement = "rack"', "law.arrangement", 'did you mean "multipack"'),
+        ('rated_capacity = "120"', "law.rated_capacity", "kW"),
         ('country = "EU"', "law.country", "there is no key"),
     ],
 )
@@ -98,6 +108,8 @@ def test_a_wrong_line_of_the_law_is_refused(complaints, line, key, words):
 def test_the_words_of_a_law_are_all_read(case):
     """Each kind of equipment and each code is accepted."""
     assert all(case(START + f'equipment = "{word}"\n').law.equipment == word for word in EQUIPMENT)
+    assert all(case(START + f'jurisdiction = "{word}"\n').law.jurisdiction == word for word in JURISDICTIONS)
+    assert all(case(START + f'arrangement = "{word}"\n').law.arrangement == word for word in ARRANGEMENTS)
     assert all(case(START + f'code = "{word}"\n').law.code == word for word in CODES)
 
 
@@ -116,3 +128,13 @@ def test_no_other_text_is_a_date(text):
     except QuantityError:
         return
     assert day.isoformat() == text
+
+
+def test_whose_law_holds_where():
+    """27 members by ISO 3166-1 (Greece is GR) under the EU, Northern Ireland too; no hint names a code that is none."""
+    assert len(EU_MEMBERS) == 27
+    assert areas("DE") == ("DE", "EU")
+    assert areas("NI") == ("NI", "EU")
+    assert areas("US-CA") == ("US-CA", "US")
+    assert [areas(code) for code in ("EU", "GB", "US", "other")] == [("EU",), ("GB",), ("US",), ("other",)]
+    assert {code for _, code in HINTS} <= set(JURISDICTIONS)

@@ -13,7 +13,7 @@ SPELT = {
     "R718": "Water",
     "R744": "CarbonDioxide",
 }
-ABSENT = ("R1132a", "R1130(E)")
+ABSENT = ("R1132a", "R1130(E)", "R13B1")
 SINGLES = [name for name in designations() if find(name).kind != "blend" and name not in ABSENT]
 # Predefined there, but not loadable: a binary pair or R1132a is missing.
 NOT_LOADABLE = {

@@ -54,6 +54,43 @@ def test_unresolved_rcl_is_marked_in_both_forms():
         assert "unresolved: " in find(name).rcl_kg_per_m3.note
 
 
+def test_every_rcl_that_does_not_follow_from_lfl_and_atel_is_disputed():
+    """Smaller of ATEL/ODL and a quarter of the LFL, of our own columns: where that is off by 7 %, a dispute says so.
+
+    7 %: two figures of two printed digits may differ by that much and agree. ASHRAE 34 takes the least of the limits.
+    """
+    off = set()
+    for name in WITH_RCL:
+        refrigerant = find(name)
+        rcl, atel = refrigerant.rcl_kg_per_m3.number, refrigerant.atel_odl_kg_per_m3.number
+        lfl = refrigerant.lfl_kg_per_m3.number
+        least = [figure for figure in (atel, None if lfl is None else 0.25 * lfl) if figure is not None]
+        if rcl is not None and atel is not None and abs(min(least) / rcl - 1.0) > 0.07:
+            off.add(name)
+    disputed = {name for name in WITH_RCL for item in find(name).disputes if item.field == "rcl_kg_per_m3"}
+
+    assert off == disputed
+    assert {"R600a", *UNRESOLVED} <= off
+    assert len(off) == 11
+
+
+def test_an_old_refrigerant_has_its_printed_limits():
+    """RD 552/2019, IF-02, table A, prints practical limit, ATEL/ODL, GWP (AR4) and ODP of these four."""
+    printed = {
+        "R113": (0.4, None, 6130.0, 0.8),
+        "R114": (0.7, 0.14, 10_000.0, 1.0),
+        "R14": (0.4, 0.4, 7390.0, 0.0),
+        "R13B1": (0.6, None, 7140.0, 10.0),
+    }
+    fields = ("practical_limit_kg_per_m3", "atel_odl_kg_per_m3", "gwp_100yr_ar4", "odp")
+
+    for name, figures in printed.items():
+        refrigerant = find(name)
+        assert tuple(getattr(refrigerant, field).number for field in fields) == figures
+        assert {getattr(refrigerant, field).source for field in fields} <= {"Spain2019", ""}
+    assert "printing slip" in find("R113").atel_odl_kg_per_m3.note
+
+
 @pytest.mark.parametrize("name", ["R23", "R116", "R218", "R227ea", "R744", *UNRESOLVED])
 def test_rcl_that_differs_from_the_decree_says_so(name):
     """Where ATEL/ODL or a quarter of the LFL of Spain2019 gives another RCL, the note names the figure."""

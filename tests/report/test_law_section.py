@@ -9,10 +9,11 @@ import pytest
 
 from retrofit.case import read_case
 from retrofit.checks import assess
-from retrofit.checks.law import DEFERENCE
 from retrofit.report import render_html
 from retrofit.report.terminal import comparison_text
 from retrofit.study import compare
+from retrofit.study.law import RowState
+from retrofit.study.law_words import DEFERENCE, NOT_VERIFIED, dates, moment_text, source_text
 from retrofit.units import IP, SI
 
 ROOT = Path(__file__).resolve().parents[2]
@@ -88,42 +89,44 @@ def test_the_harbour_market_by_hand(page_of, read_page):
 
     assert numbers(today[4])[0][0] == pytest.approx(260 * 3922 / 1000, abs=0.5)
     assert today[5] == "every 3 months"
-    assert "any gas from 2030-01-01" in today[7]  # reclaimed gas of 2500 or more ends then (Art. 13)
-    assert rows["R-454C"][7] == "none in these tables"
+    assert today[7].startswith("new gas from 2025-01-01")  # GWP 2500 or more (Art. 13(3))
+    assert today[8] == "any gas from 2030-01-01"  # reclaimed gas of 2500 or more ends then
+    assert rows["R-454C"][7:9] == ["none in these tables"] * 2
 
 
 def test_leak_checks_and_bans_are_those_of_the_result(shipped, page_of, read_page, assessed):
-    """Months, and the first day of each ban with its gas; unknown where a row cannot be told."""
+    """Months, the strictest ban in force at the start and the next; unknown where a row cannot be told."""
     rows = read_page(page_of(shipped, "si")).tables["t-law"][1:]
     for row, entry in zip(rows, assessed(shipped).entries, strict=True):
         law = entry.law
-        open_ = [r for r in law.rows_on("leak check") if r.in_force(law.start) and r.state == "unknown"]
         if law.leak_check_months is not None:
             assert row[5].startswith(f"every {law.leak_check_months:g} months")
         else:
-            assert row[5] == ("unknown" if open_ else row[5])
+            assert row[5] == ("unknown" if law.leak_check_open else row[5])
             assert not row[5].startswith("every")
-        bans = [r for r in law.rows if r.gas]
-        assert all(r.applies_from.isoformat() in row[7] for r in bans)
-        assert bans or row[7] == "none in these tables"
+        for cell, ban in ((row[7], law.strictest), (row[8], law.next_ban)):
+            assert f"from {ban.applies_from}" in cell if ban else cell == "none in these tables"
+            assert ("not verified" in cell) == (ban is not None and not ban.is_verified)
 
 
 def test_every_row_stands_with_source_basis_and_day(shipped, page_of, read_page, assessed):
-    """Text, exceptions, numbers, reasons, source and the day it was checked; what is from memory says so."""
+    """Text, exceptions, numbers, reasons, source, edition, address and the day it was read; not verified is said."""
     page = read_page(section(page_of(shipped, "si")))
     rows = [[plain(cell) for cell in row] for row in page.tables["t-law-rows"] if len(row) == 4]
     for entry in assessed(shipped).entries:
         for row in entry.law.rows:
-            mine = [cells for cells in rows if plain(row.text) in cells[1] and plain(row.source) in cells[3]]
+            mine = [cells for cells in rows if plain(row.text) in cells[1] and plain(source_text(row)) in cells[3]]
             mine = [cells for cells in mine if entry.refrigerant.display_name in cells[2]]
-            mine = [cells for cells in mine if cells[0] == plain(row.dates)]
+            mine = [cells for cells in mine if cells[0] == plain(dates(row))]
             assert mine, row.id
             assert plain(row.exceptions) in mine[0][1]
-            assert row.state in mine[0][2]
-            assert row.date_checked.isoformat() in mine[0][3]
+            is_outlook = row.subject == "proposal" and row.state == RowState.APPLIES
+            assert ("outlook" if is_outlook else row.state.value) in mine[0][2]
+            assert all(part in mine[0][3] for part in (row.edition, row.address, row.date_checked.isoformat()))
             assert "check the current text" in mine[0][3]
-            assert ("From memory" in mine[0][3]) == row.is_from_memory
-            assert all(figure in mine[0][2] for figure in re.findall(r"[\d.]+ (?:t CO2e|kg|kW|lb)", row.measured))
+            assert ("not verified" in mine[0][3].replace(plain(row.clause), "")) == (not row.is_verified)
+            values = [item.value[1] for item in row.measured if item.value and item.measure != "share"]
+            assert all(f"{value:.4g}" in mine[0][2] for value in values)
 
 
 def test_the_line_of_time_is_in_order_and_whole(shipped, page_of, read_page, assessed):
@@ -133,11 +136,11 @@ def test_the_line_of_time_is_in_order_and_whole(shipped, page_of, read_page, ass
     shown = {(row[0], row[1]) for row in rows}
 
     assert [row[0] for row in rows] == sorted(row[0] for row in rows)
-    assert (result.law.on.isoformat(), "the tables are looked at") in shown
-    assert (result.law.date_of_change.isoformat(), "the change of refrigerant") in shown
+    assert (result.law.on.isoformat(), "date of the legal check") in shown
+    assert (result.law.date_of_change.isoformat(), "change of refrigerant") in shown
     for entry in result.entries:
         for moment in entry.law.timeline:
-            assert (moment.day.isoformat(), plain(moment.text)) in shown
+            assert (moment.day.isoformat(), plain(moment_text(moment))) in shown
 
 
 def test_the_tables_are_named_with_their_dates(shipped, page_of, read_page, assessed):
@@ -146,8 +149,8 @@ def test_the_tables_are_named_with_their_dates(shipped, page_of, read_page, asse
 
     assert rows
     for row, table in zip(rows, assessed(shipped).law.tables, strict=True):
-        assert row[:3] == [table.title, table.file, str(table.rows)]
-        assert row[3:5] == [table.checked.isoformat(), table.review_by.isoformat()]
+        assert row[:4] == [table.title, table.file, str(table.rows), str(table.verified)]
+        assert row[4:6] == [table.checked.isoformat(), table.review_by.isoformat()]
 
 
 def test_it_defers_before_it_tells(shipped, page_of, assessed):
@@ -168,17 +171,32 @@ def test_without_a_jurisdiction_there_is_no_section(assessed, made_at, read_page
     assert "\nLaw: " not in comparison_text(result, SI, 100)
 
 
-def test_a_jurisdiction_without_a_table_is_unknown(case_with, made_at, read_page):
-    """Nothing is told of it but that it is unknown, and for whom there are tables; a name is only text."""
-    result = assess(compare(case_with(law={"jurisdiction": "<b>Nowhere</b>"})))
-    html = render_html(result, made_at=made_at)
-    page = read_page(section(html))
+def test_a_jurisdiction_without_a_table_is_not_checked(case_with, made_at, read_page):
+    """Nothing is said of it but that law was not checked, and for whom there are tables."""
+    result = assess(compare(case_with(law={"jurisdiction": "other"})))
+    page = read_page(section(render_html(result, made_at=made_at)))
+    said = "Law not checked: there is no table for other; there are tables for EU, GB, US, US-CA"
 
     assert "t-law" not in page.tables
-    assert "Unknown No table of law for this jurisdiction" in " ".join(page.text.split())
-    assert "EU, US, US-CA" in page.text
-    assert "Jurisdiction: <b>Nowhere</b>" in page.text
-    assert "Unknown: there is no table for <b>Nowhere</b>" in comparison_text(result, SI, 100)
+    assert said in " ".join(page.text.split())
+    assert "Jurisdiction: other" in page.text
+    assert said in comparison_text(result, SI, 1000)
+
+
+@pytest.mark.parametrize(
+    ("jurisdiction", "words"), [("DE", "national rules of Germany"), ("GB", "the reform announced")]
+)
+def test_what_is_not_held_is_named(case_with, made_at, read_page, jurisdiction, words):
+    """Page and terminal name the fields of law that no table holds, and under whose tables a member is read."""
+    result = assess(compare(case_with(law={"jurisdiction": jurisdiction, "equipment": "supermarket"})))
+    page = " ".join(read_page(section(render_html(result, made_at=made_at))).text.split())
+    terminal = comparison_text(result, SI, 1000)
+
+    assert words in page
+    assert words in terminal
+    assert "Not legal advice" in page
+    assert "Not legal advice" in terminal
+    assert ("DE (Germany), by the tables for EU" in page) == (jurisdiction == "DE")
 
 
 def test_an_unknown_charge_leaves_leak_checks_unknown(case_with, made_at, read_page):
@@ -208,8 +226,8 @@ def test_a_table_of_the_user_is_only_text_and_its_age_is_told(tmp_path, made_at,
     assert {"script", "img", "b"}.isdisjoint(tag for tag, _ in page.elements)
     own = next(row for row in page.tables["t-law-tables"] if row[1] == "own.toml")
     assert own[0] == "<b>Own</b> law"
-    assert own[5] == "the user’s own, beside the case file; past its review"
-    assert html.index("own.toml was to be checked again by 2026-01-01") < html.index("<table")
+    assert own[6] == "the user’s own, beside the case file; past its review: gives no answer"
+    assert html.index("own.toml was to be reviewed by 2026-01-01") < html.index("<table")
 
 
 # Terminal
@@ -223,14 +241,36 @@ def test_the_terminal_has_weight_and_leak_checks(units, assessed):
     lines = text.partition("\nLaw: ")[2].partition("\n\n")[0].split("\n")
     for entry in result.entries:
         cells = re.split(r"\s{2,}", next(line for line in lines if line.startswith(entry.refrigerant.designation)))
-        weight = entry.law.co2e_t["gwp_eu_2024_573"][1]
+        law = entry.law
+        weight = law.co2e_t["gwp_eu_2024_573"][1]
         value, half = numbers(cells[2])[0]
-        bans = [row for row in entry.law.rows if row.gas]
         assert abs(value - weight) <= half
-        assert cells[3].startswith(f"every {entry.law.leak_check_months:g} months")
-        assert (min(row.applies_from for row in bans).isoformat() if bans else "no row") in cells[5]
-        assert ("†" in cells[4]) == any(row.is_from_memory for row in entry.law.rows_on("leak detection"))
+        assert cells[3].startswith(f"every {law.leak_check_months:g} months")
+        for cell, ban in ((cells[5], law.strictest), (cells[6], law.next_ban)):
+            assert (ban.applies_from.isoformat() if ban else "no row") in cell
+            assert ("†" in cell) == (ban is not None and not ban.is_verified)
     told = " ".join(lines)
-    for mark in ("no row: not in these tables", "† from memory", "‡ one row stays open"):
+    for mark in ("no row: not in these tables", f"† {NOT_VERIFIED}"):
         assert mark in told
-    assert "eu-2024-573.toml, checked 2026-12-01" in told
+    assert "eu-2024-573.toml, read 2026-12-01" in told
+
+
+# Golden line of time
+
+GOLDEN = """\
+2026-12-01 date of the legal check
+2027-01-01 begins: HFC placed on the market in the EU: at most 21 665 691 t CO2e a year.
+2027-04-01 change of refrigerant
+2030-01-01 begins: HFC placed on the market in the EU: at most 9 132 097 t CO2e a year.
+2030-01-01 begins: No servicing of refrigeration equipment with reclaimed or recycled gas of GWP 2500 or more either.
+2032-01-01 begins: No servicing of stationary refrigeration, chillers apart, with new gas of GWP 750 or more.
+2033-01-01 begins: HFC placed on the market in the EU: at most 8 445 713 t CO2e a year.
+2035-04-01 end of the remaining life"""
+
+
+def test_the_line_of_time_of_the_harbour_market(page_of, read_page):
+    """Read by hand from Art. 13(3) and (5) and annex VII of Regulation (EU) 2024/573: nothing ends."""
+    rows = read_page(page_of("harbour-market", "si")).tables["t-law-time"][1:]
+    shown = sorted({f"{row[0]} {row[1]}" for row in rows})
+
+    assert shown == sorted(plain(text) for text in GOLDEN.split("\n"))

@@ -4,15 +4,13 @@ The tables are data in TOML; a folder `law` beside a case file replaces or adds 
 advice, and nothing here says that a thing is allowed.
 """
 
-from retrofit.checks.law.check import DEFERENCE, end_of_life, law_for, leak_check_months, with_law
+from retrofit.checks.law.check import end_of_life, law_for, leak_check_months, with_law
 from retrofit.checks.law.findings import law_findings
 from retrofit.checks.law.reader import read_table, shipped, tables_for
-from retrofit.checks.law.rows import SUBJECTS, Limit, Row, Table
+from retrofit.checks.law.rows import SUBJECTS, Row, Table
 
 __all__ = [
-    "DEFERENCE",
     "SUBJECTS",
-    "Limit",
     "Row",
     "Table",
     "end_of_life",

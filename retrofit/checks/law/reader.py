@@ -13,16 +13,17 @@ from importlib.resources import files
 from pathlib import Path
 from typing import Any
 
-from retrofit.case import EQUIPMENT
+from retrofit.case import ARRANGEMENTS, EQUIPMENT, JURISDICTIONS
 from retrofit.case.dates import Day, YesNo
 from retrofit.case.law import DAY
 from retrofit.case.numbers import Number
 from retrofit.case.positions import KeyPath
 from retrofit.case.source import parsed, text_of
 from retrofit.case.values import Choice, FileValue, Refrigerant, Text
-from retrofit.checks.law.rows import GROUPS, MEASURES, SUBJECTS, Limit, Row, Table
+from retrofit.checks.law.rows import GROUPS, MEASURES, SUBJECTS, TRANSFERS, Row, Table
 from retrofit.errors import CaseFileError, Problem, QuantityError
 from retrofit.refrigerants import GWP_BASES
+from retrofit.study.law import Limit
 from retrofit.units import close_to, described, listed, quoted, shown
 
 FOLDER = "law"
@@ -45,9 +46,13 @@ _CHECKED = Day("2000-01-01", "2100-12-31", "tables of law were checked within it
 _GROUPS, _KINDS = Many(Choice(GROUPS)), Many(Choice(EQUIPMENT))
 _HEAD: Mapping[str, FileValue | Many] = {
     "title": _SENTENCE,
-    "jurisdictions": Many(Text(40)),
+    "jurisdictions": Many(Choice(JURISDICTIONS)),
     "review_by": _CHECKED,
     "history": YesNo(),
+    "document": _SENTENCE,
+    "edition": _SENTENCE,
+    "address": _SENTENCE,
+    "not_held": Many(_SENTENCE),
 }
 _ROW: Mapping[str, FileValue | Many] = {
     "id": _ID,
@@ -67,12 +72,24 @@ _ROW: Mapping[str, FileValue | Many] = {
     "hermetically_sealed": YesNo(),
     "leak_detection_system": YesNo(),
     "product_below_minus_50": YesNo(),
+    "arrangement": Many(Choice(ARRANGEMENTS)),
+    "chiller": YesNo(),
+    "transfer": Choice(TRANSFERS),
+    "cascade_primary": YesNo(),
+    "safety_exception": YesNo(),
+    "safety_gwp": Number(0.0, 1e5, "limits of law lie within it"),
     "condition": _SENTENCE,
+    "not_read": _SENTENCE,
     "applies_from": DAY,
     "applies_until": DAY,
+    "series": _ID,
     "exceptions": _SENTENCE,
     "gwp_basis": Choice((*GWP_BASES, "none")),
     "source": _SENTENCE,
+    "clause": _SENTENCE,
+    "edition": _SENTENCE,
+    "address": _SENTENCE,
+    "review_by": _CHECKED,
     "date_checked": _CHECKED,
     "basis": Choice(("read", "extract", "memory")),
     "confidence": Choice(("high", "medium", "low")),
@@ -85,8 +102,9 @@ _LIMIT: Mapping[str, FileValue | Many] = {
     "below": _BOUND,
     "to": _BOUND,
 }
+_INHERITED = ("document", "edition", "address", "review_by")  # what the head says for rows that do not
 _NEEDED_HEAD = ("title", "jurisdictions", "review_by")
-_NEEDED_ROW = ("id", "subject", "text", "gwp_basis", "source", "date_checked", "basis")
+_NEEDED_ROW = ("id", "subject", "text", "gwp_basis", "date_checked", "basis")
 Faults = list[tuple[KeyPath, str]]
 
 
@@ -146,14 +164,18 @@ def read_table(file: str, text: str, own_path: str = "") -> Table:
     data, lines = parsed(text, own_path or file)
     faults: Faults = []
     head = _values(data, _HEAD, (), _NEEDED_HEAD, faults, other=("row",))
-    rows = tuple(_rows(data.get("row"), faults))
+    inherited: dict[str, Any] = {
+        key: head[key] for key in ("document", "edition", "address", "review_by") if key in head
+    }
+    rows = tuple(_rows(data.get("row"), inherited, faults))
     if faults:
         raise CaseFileError(own_path or file, [_located(where, text, lines) for where, text in faults])
+    head.pop("document", None)
     is_history = bool(head.pop("history", False))
     return Table(file=file, is_own=bool(own_path), is_history=is_history, rows=rows, **head)
 
 
-def _rows(found: object, faults: Faults) -> Iterator[Row]:
+def _rows(found: object, inherited: Mapping[str, Any], faults: Faults) -> Iterator[Row]:
     if not isinstance(found, list) or not found:
         faults.append((("row",) if found else (), "the table has no rows; begin each with [[row]]"))
         return
@@ -163,7 +185,7 @@ def _rows(found: object, faults: Faults) -> Iterator[Row]:
         if not isinstance(data, dict):
             faults.append((where, f"{described(data)} stands where a row is needed; begin it with [[row]]"))
             continue
-        row = _row(data, where, faults)
+        row = _row(data, where, inherited, faults)
         if row and row.id in seen:
             faults.append(((*where, "id"), f"{quoted(row.id)} is the name of a row above; give each its own"))
         if row:
@@ -171,13 +193,18 @@ def _rows(found: object, faults: Faults) -> Iterator[Row]:
             yield row
 
 
-def _row(data: Mapping[str, Any], where: KeyPath, faults: Faults) -> Row | None:
+def _row(data: Mapping[str, Any], where: KeyPath, inherited: Mapping[str, Any], faults: Faults) -> Row | None:
+    """Return one row; what it does not say of its document, the head of the table says."""
     before = len(faults)
-    values = _values(data, _ROW, where, _NEEDED_ROW, faults, other=("when",))
+    needed = _NEEDED_ROW if "document" in inherited else (*_NEEDED_ROW, "source")
+    values = _values(data, _ROW, where, needed, faults, other=("when",))
+    if "source" in values:
+        values["document"] = values.pop("source")
+    values = {**inherited, **values}
     values["when"] = tuple(_limits(data.get("when", []), (*where, "when"), faults))
     if len(faults) == before:
         faults += [((*where, key), text) for key, text in _between(values)]
-    if len(faults) > before:
+    if len(faults) > before or "review_by" not in values:
         return None
     names = {field.name for field in fields(Row)}
     return Row(**{name if name in names else f"{name}_": value for name, value in values.items()})
@@ -226,6 +253,8 @@ def _between(values: Mapping[str, Any]) -> Iterator[tuple[str, str]]:
         yield "subject", 'a service ban names its gas; add gas = "new" if reclaimed gas is left, else "any"'
     if ("value" in values) != ("unit" in values):
         yield "value" if "value" in values else "unit", "value and unit go together; add the other"
+    if "safety_gwp" in values and not values.get("safety_exception"):
+        yield "safety_gwp", "it says from which GWP a safety exception does not help; add safety_exception = true"
     yield from _wrong_unit(values)
 
 

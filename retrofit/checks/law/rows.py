@@ -1,9 +1,11 @@
-"""The shapes of a table of law: its rows, and the limits a row sets."""
+"""The shapes of a table of law and its rows."""
 
 from __future__ import annotations
 
 import datetime
 from dataclasses import dataclass
+
+from retrofit.study.law import Limit
 
 SUBJECTS = (
     "leak check",
@@ -17,41 +19,27 @@ SUBJECTS = (
     "new equipment",
     "change of refrigerant",
     "retrofit plan",
+    "certificate",
+    "new equipment duty",
+    "recovery",
     "proposal",
 )
 MEASURES = ("t CO2e", "kg", "lb", "GWP", "kW")
-GROUPS = ("CFC", "HCFC", "HFC", "HFO", "HCFO", "PFC", "HC", "inorganic", "ether", "chloroalkene", "iodofluorocarbon")
-
-
-@dataclass(frozen=True)
-class Limit:
-    """A range of one measure: `from_` and `to` belong to it, `above` and `below` do not.
-
-    kg counts the gases that the row names, t CO2e and lb the full charge, kW the cooling of the plant.
-    """
-
-    measure: str
-    from_: float | None = None
-    above: float | None = None
-    below: float | None = None
-    to: float | None = None
-
-    def too_low(self, value: float) -> bool:
-        """Say whether a value lies under the range."""
-        return (self.from_ is not None and value < self.from_) or (self.above is not None and value <= self.above)
-
-    def too_high(self, value: float) -> bool:
-        """Say whether a value lies over the range."""
-        return (self.below is not None and value >= self.below) or (self.to is not None and value > self.to)
-
-    @property
-    def words(self) -> str:
-        """The range in words, such as "from 50 to below 500 t CO2e". [-]"""
-        ends = (("from", self.from_), ("above", self.above), ("to below", self.below), ("up to", self.to))
-        text = " ".join(f"{word} {end:g}" for word, end in ends if end is not None)
-        if self.from_ is None and self.above is None:
-            text = text.removeprefix("to ")
-        return f"GWP {text}" if self.measure == "GWP" else f"{text} {self.measure}"
+TRANSFERS = ("air to air", "air to water")
+GROUPS = (
+    "CFC",
+    "HCFC",
+    "halon",
+    "HFC",
+    "HFO",
+    "HCFO",
+    "PFC",
+    "HC",
+    "inorganic",
+    "ether",
+    "chloroalkene",
+    "iodofluorocarbon",
+)
 
 
 @dataclass(frozen=True)
@@ -68,18 +56,30 @@ class Row:
         safety_classes: Classes it covers.
         when: Limits that all have to hold.
         hermetically_sealed, leak_detection_system, product_below_minus_50: What the case has to say, None if either.
+        arrangement: How the equipment is put together, of which one has to be.
+        chiller: Whether it has to cool water or brine (a chiller, as EU law has it) or must not.
+        transfer: "air to air" or "air to water".
+        cascade_primary: Whether it has to be the primary circuit of a cascade or must not.
+        safety_exception, safety_gwp: Whether the row falls where safety at the site demands it, and the GWP from which
+            it holds all the same; None if from none.
         condition: What else has to be so, in words, that no case says.
-        applies_from, applies_until: First and last day.
-        exceptions, gwp_basis, source, date_checked, basis, confidence: As in `retrofit.study.law.LawRow`.
+        not_read: What of the law could not be read, in words; the row then gives no answer. Empty if all was.
+        applies_from, applies_until, series: First and last day, and the rows that it follows or that follow it.
+        exceptions, gwp_basis, document, clause, edition, address, date_checked, review_by, basis, confidence: As in
+            `retrofit.study.law.LawRow`.
     """
 
     id: str
     subject: str
     text: str
     gwp_basis: str
-    source: str
+    document: str
     date_checked: datetime.date
+    review_by: datetime.date
     basis: str
+    clause: str = ""
+    edition: str = ""
+    address: str = ""
     value: float | None = None
     unit: str = ""
     gas: str = ""
@@ -95,11 +95,24 @@ class Row:
     hermetically_sealed: bool | None = None
     leak_detection_system: bool | None = None
     product_below_minus_50: bool | None = None
+    arrangement: tuple[str, ...] = ()
+    chiller: bool | None = None
+    transfer: str = ""
+    cascade_primary: bool | None = None
+    safety_exception: bool = False
+    safety_gwp: float | None = None
     condition: str = ""
+    not_read: str = ""
     applies_from: datetime.date | None = None
     applies_until: datetime.date | None = None
+    series: str = ""
     exceptions: str = ""
     confidence: str = ""
+
+    @property
+    def gwp_limit(self) -> float:
+        """Smallest GWP that it covers; 0 if it sets none. [-]"""
+        return next((limit.from_ or limit.above or 0.0 for limit in self.when if limit.measure == "GWP"), 0.0)
 
     def ended(self, day: datetime.date) -> bool:
         """Say whether its last day lies before a day."""
@@ -112,9 +125,12 @@ class Table:
 
     Attributes:
         file, is_own: Name of its file, and whether that is the user's own.
-        title, jurisdictions, review_by: What it is, whom it holds for, and when it is to be checked again.
-        is_history: Kept for the past.
+        title, jurisdictions: What it is, and whom it holds for.
+        review_by: Last day on which it is used; its rows may have their own.
+        is_history: Kept for the past; such a table is not reviewed.
         rows: Its rows.
+        edition, address: Of the text; its rows may have their own.
+        not_held: Fields of law of its jurisdictions that no table here holds.
     """
 
     file: str
@@ -124,3 +140,6 @@ class Table:
     review_by: datetime.date
     is_history: bool
     rows: tuple[Row, ...]
+    edition: str = ""
+    address: str = ""
+    not_held: tuple[str, ...] = ()

@@ -6,8 +6,10 @@ Every figure of the standard here is from memory or from an extract; the standar
 from __future__ import annotations
 
 from dataclasses import replace
+from typing import Any
 
 from retrofit.case import Room
+from retrofit.checks.room.lists import read
 from retrofit.checks.room.working import (
     Rule,
     Work,
@@ -27,9 +29,9 @@ CONCENTRATION_FACTOR = 0.5  # CF of the dispersal volume, from memory
 RESTRICTED = "the standard restricts use beyond the charge, by rules not held here (from memory, high confidence)"
 QUARTER = 0.25  # an RCL by flammability is a quarter of the LFL (ASHRAE 34)
 LEFT_OUT = {"R717": "ASHRAE 15 (2022) leaves ammonia to IIAR 2, whose limits are not held here"}
-OUTSIDE_ROOM = (
-    "all parts stand in a machinery room or in open air (location III): this rule is for a room that a leak can reach, "
-    "and the standard's rules on machinery rooms are asked instead"
+REFRIGERATED_OPEN = (
+    "`refrigerated` in [room] is not given, and a room only for process or storage under refrigeration has conditions "
+    "instead of the concentration limit"
 )
 
 RCL = Rule(
@@ -48,6 +50,7 @@ RCL = Rule(
     "(interpretation 4 of the 2013 edition); factor and form of 2022 from memory",
     "memory",
 )
+RCL_FOR = "every class: the rule for a room that a leak can reach"
 DISPERSAL = Rule(
     "dispersal",
     "Effective dispersal volume charge of A2L in comfort use, with air circulation",
@@ -74,8 +77,11 @@ def limits(refrigerant: Refrigerant, room: Room) -> tuple[WorkedLimit, ...]:
         refrigerant: The refrigerant.
         room: The room; what it does not state makes a limit unknown.
     Returns: The concentration limit, two of them if its RCL is unresolved, and for an A2L in comfort use the
-        dispersal volume charge beside it.
+        dispersal volume charge beside it. Where the concentration does not limit, the conditions instead.
     """
+    instead = _instead(room)
+    if instead is not None:
+        return (_no_limit(refrigerant, room, instead),)
     kept = rcl_limit(refrigerant, room)
     found = [kept]
     if refrigerant.rcl_kg_per_m3.status == "unresolved":
@@ -83,6 +89,31 @@ def limits(refrigerant: Refrigerant, room: Room) -> tuple[WorkedLimit, ...]:
     if refrigerant.safety_class.text == "A2L" and room.comfort is not False:
         found.append(dispersal_limit(refrigerant, room))
     return tuple(found)
+
+
+def _instead(room: Room) -> dict[str, Any] | None:
+    """Return what holds instead of a concentration limit, None where it holds."""
+    table = read("without_limit")
+    if room.location_class == "III":
+        return dict(table["machinery"])
+    return dict(table["refrigerated"]) if room.refrigerated and not room.comfort else None
+
+
+def _no_limit(refrigerant: Refrigerant, room: Room, instead: dict[str, Any]) -> WorkedLimit:
+    """Return that the concentration limits nothing here, with the charges a flammable one would reach the LFL at."""
+    work = Work()
+    _everything_else(work, refrigerant, room, by_volume=False)
+    lfl = refrigerant.lfl_kg_per_m3
+    parsed = class_of(refrigerant)
+    if parsed is not None and parsed.flammability != "1" and lfl.number is not None and room.volume_m3 is not None:
+        work.flags += value_flags("LFL", lfl, refrigerant)
+        for share, name in ((1.0, "LFL"), (QUARTER, "a quarter of the LFL")):
+            work.lines.append(
+                f"{name} in the room: {concentration(share * lfl.number)} · {room_volume(room.volume_m3)} "
+                f"= {mass(share * lfl.number * room.volume_m3)}"
+            )
+    rule = replace(RCL, source=instead["source"])
+    return work.no_limit(rule, instead["because"], tuple(instead["conditions"]), RCL_FOR)
 
 
 def rcl_limit(refrigerant: Refrigerant, room: Room, rcl: float | None = None, origin: str = "") -> WorkedLimit:
@@ -106,7 +137,9 @@ def rcl_limit(refrigerant: Refrigerant, room: Room, rcl: float | None = None, or
             f"RCL = {concentration(found)} ({origin or refrigerant.rcl_kg_per_m3.source})",
             f"m = {concentration(found)} · {room_volume(room.volume_m3)} · {factor:g} = {mass(limit)}",
         ]
-    return work.limit(RCL, limit, "volume", "every class: the rule for a room that a leak can reach")
+    is_open = room.refrigerated is None and not room.comfort
+    why = REFRIGERATED_OPEN if is_open else ""
+    return work.limit(RCL, limit, "volume", RCL_FOR, why, open_keys=("refrigerated",))
 
 
 def _quarter_lfl(refrigerant: Refrigerant, room: Room) -> WorkedLimit:
@@ -143,18 +176,17 @@ def dispersal_limit(refrigerant: Refrigerant, room: Room) -> WorkedLimit:
     )
 
 
-def _everything_else(work: Work, refrigerant: Refrigerant, room: Room) -> None:
+def _everything_else(work: Work, refrigerant: Refrigerant, room: Room, *, by_volume: bool = True) -> None:
     """Note what else this family needs to know, and where it does not apply."""
     work.flags += [*class_flags(refrigerant), "the rule is from memory or an extract: look up the edition in force"]
     parsed = class_of(refrigerant)
     if parsed is None:
         work.missing.append(f"safety class of {refrigerant.designation}: the catalogue states none")
-    work.need(room.volume_m3, "`volume` in [room]")
-    work.need(room.occupancy, "`occupancy` in [room]")
+    if by_volume:
+        work.need(room.volume_m3, "`volume` in [room]")
+        work.need(room.occupancy, "`occupancy` in [room]")
     if refrigerant.designation in LEFT_OUT:
         work.missing.append(LEFT_OUT[refrigerant.designation])
-    if room.location_class == "III":
-        work.missing.append(OUTSIDE_ROOM)
     if parsed is not None:
         _restricted(work, parsed, room)
 

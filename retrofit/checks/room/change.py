@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from retrofit.case import areas
 from retrofit.checks.room.lists import asked, read
 from retrofit.refrigerants import parse_safety_class
 from retrofit.refrigerants.safety import FLAMMABILITY_RANK, TOXICITY_RANK, SafetyClass
@@ -59,7 +60,7 @@ def what_is_asked(jurisdiction: str | None) -> tuple[Question, ...]:
     """
     rows = read("change")["asked"]
     held = sorted({name for row in rows for name in row["jurisdictions"]})
-    names = held if jurisdiction is None else [name for name in held if _lies_in(jurisdiction, name)]
+    names = held if jurisdiction is None else [name for name in held if name in areas(jurisdiction)]
     found = [asked(row) for row in rows if not row["jurisdictions"] or set(row["jurisdictions"]) & set(names)]
     if jurisdiction is not None and names:
         return tuple(found)
@@ -68,11 +69,6 @@ def what_is_asked(jurisdiction: str | None) -> tuple[Question, ...]:
     )
     text = f"Look up law and listing rules at the place of the plant: {which}; rows are held for {' and '.join(held)}."
     return (*found, Question("jurisdiction", text, (), "", None, (which,), "limits of this tool", "practice"))
-
-
-def _lies_in(jurisdiction: str, name: str) -> bool:
-    """Return whether a jurisdiction such as US-CA is another such as US, or a part of it."""
-    return jurisdiction.upper() == name or jurisdiction.upper().startswith(f"{name}-")
 
 
 def asked_text(jurisdiction: str | None) -> str:

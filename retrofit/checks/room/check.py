@@ -1,7 +1,7 @@
 """The charge of one refrigerant against the room: every limit, which decides, and what follows.
 
-A verdict says "below the limit", "above the limit" or "unknown", and no more: whether a plant may stand in a room
-is decided by the standard, the authority and licensed practice.
+A verdict says "below the limit", "above the limit", "under conditions" where no charge is set, or "unknown", and no
+more: whether a plant may stand in a room is decided by the standard, the authority and licensed practice.
 """
 
 from __future__ import annotations
@@ -14,13 +14,24 @@ from retrofit.checks.room.change import class_change
 from retrofit.checks.room.lfl import height_factor_m, is_heavy_enough, least_area_m2
 from retrofit.checks.room.lists import class_lists, questions
 from retrofit.checks.room.machinery import machinery_questions
+from retrofit.checks.room.places import code_of
 from retrofit.checks.room.working import mass, mass_told
 from retrofit.refrigerants import Refrigerant
 from retrofit.study import Comparison, Entry
 from retrofit.study.charge import CircuitCharge, circuit_charge
-from retrofit.study.room import ABOVE, BELOW, UNKNOWN, ClassChange, Question, RoomCheck, WorkedLimit
+from retrofit.study.room import (
+    ABOVE,
+    BELOW,
+    CONDITIONS,
+    UNKNOWN,
+    ClassChange,
+    Question,
+    RoomCheck,
+    WorkedLimit,
+)
 
-# What `code` of [law] stands for; not stated, the families of "both" are shown and have to agree.
+# What `code` of [law] stands for; not stated, the rules usual in the jurisdiction are taken. With neither, the families
+# of "both" are shown and have to agree.
 FAMILIES = {
     "ASHRAE 15": ("ASHRAE 15",),
     "EN 378": ("EN 378",),
@@ -32,13 +43,16 @@ NO_CODE = "`code` in [law]"
 NO_ROOM = "[room]: the case describes no room"
 
 
-def limits_of(refrigerant: Refrigerant, room: Room, families: Sequence[str]) -> tuple[WorkedLimit, ...]:
-    """Return every limit of the code families, and of the product standard in comfort use.
+def limits_of(
+    refrigerant: Refrigerant, room: Room, families: Sequence[str], jurisdiction: str | None = None
+) -> tuple[WorkedLimit, ...]:
+    """Return every limit of the code families, and of the product standards.
 
     Args:
         refrigerant: The refrigerant.
         room: The room.
         families: The code families.
+        jurisdiction: Whose product standards; None for those of every place held here.
     """
     found: list[WorkedLimit] = []
     for family in families:
@@ -47,7 +61,7 @@ def limits_of(refrigerant: Refrigerant, room: Room, families: Sequence[str]) -> 
         else:
             found += en378.limits(refrigerant, room, family)
             found += quantity.alternative(refrigerant, room, family)
-    return (*found, *product.limits(refrigerant, room))
+    return (*found, *product.limits(refrigerant, room, jurisdiction))
 
 
 def against_limit(limit: WorkedLimit, charge: CircuitCharge) -> tuple[str, tuple[str, ...]]:
@@ -56,8 +70,10 @@ def against_limit(limit: WorkedLimit, charge: CircuitCharge) -> tuple[str, tuple
     Args:
         limit: The limit.
         charge: The charge.
-    Returns: "below the limit", "above the limit" or "unknown", and why.
+    Returns: "below the limit", "above the limit", "under conditions" or "unknown", and why.
     """
+    if limit.unlimited_because:
+        return CONDITIONS, ()
     if limit.limit_kg is None:
         return UNKNOWN, limit.unknown_because
     lowest, highest = charge.lowest_kg, charge.highest_kg
@@ -91,7 +107,9 @@ def _family_verdict(limits: Sequence[WorkedLimit], charge: CircuitCharge) -> tup
             ]
     if ABOVE in words:
         return ABOVE, ()
-    return (UNKNOWN, tuple(dict.fromkeys(missing))) if UNKNOWN in words or not words else (BELOW, ())
+    if UNKNOWN in words or not words:
+        return UNKNOWN, tuple(dict.fromkeys(missing))
+    return (BELOW if BELOW in words else CONDITIONS), ()
 
 
 def room_verdict(
@@ -115,6 +133,8 @@ def room_verdict(
         return ABOVE, ()
     if len(words) == 1 and UNKNOWN not in words:
         return words.pop(), ()
+    if words == {BELOW, CONDITIONS}:
+        return BELOW, ()
     return UNKNOWN, missing if is_code_stated else (NO_CODE, *missing)
 
 
@@ -134,9 +154,10 @@ def room_check(comparison: Comparison, entry: Entry) -> RoomCheck:
         entry: One of its refrigerants.
     """
     case, refrigerant = comparison.case, entry.refrigerant
-    code = (case.law.code if case.law else None) or ""
+    jurisdiction = case.law.jurisdiction if case.law else None
+    code = (case.law.code if case.law else None) or code_of(jurisdiction)
     families, charge = FAMILIES[code], circuit_charge(case, entry, comparison.existing)
-    limits = limits_of(refrigerant, case.room, families) if case.room else ()
+    limits = limits_of(refrigerant, case.room, families, jurisdiction) if case.room else ()
     word, missing = (
         room_verdict(limits, families, charge, is_code_stated=bool(code)) if case.room else (UNKNOWN, (NO_ROOM,))
     )
@@ -153,11 +174,18 @@ def room_check(comparison: Comparison, entry: Entry) -> RoomCheck:
         margin_kg=None if limit_kg is None or highest is None else limit_kg - highest,
         verdict=word,
         unknown_because=missing,
-        questions=_asked(refrigerant, case.room, families, highest),
+        questions=_asked(refrigerant, case.room, families, highest, jurisdiction),
+        conditions=_conditions(limits, word),
         machinery_room=_machinery(case, entry, highest, families, word),
         lists=class_lists(refrigerant.safety_class.text),
         change=_change(comparison, entry),
     )
+
+
+def _conditions(limits: Sequence[WorkedLimit], word: str) -> tuple[str, ...]:
+    """Return what holds instead of a limit; above one that stands, nothing does."""
+    found = [text for limit in limits if limit.role == "limit" for text in limit.conditions]
+    return () if word == ABOVE else tuple(dict.fromkeys(found))
 
 
 def _change(comparison: Comparison, entry: Entry) -> ClassChange | None:
@@ -169,9 +197,13 @@ def _change(comparison: Comparison, entry: Entry) -> ClassChange | None:
 
 
 def _asked(
-    refrigerant: Refrigerant, room: Room | None, families: tuple[str, ...], highest_kg: float | None
+    refrigerant: Refrigerant,
+    room: Room | None,
+    families: tuple[str, ...],
+    highest_kg: float | None,
+    jurisdiction: str | None,
 ) -> tuple[Question, ...]:
-    found = questions(refrigerant, families)
+    found = questions(refrigerant, families, jurisdiction)
     area = _area_needed(refrigerant, room, highest_kg)
     return found if area is None else (area, *found)
 

@@ -9,6 +9,7 @@ from retrofit.refrigerants import parse_safety_class
 from retrofit.study import Comparison, Entry, Finding
 from retrofit.study.charge import LARGEST_CIRCUIT
 from retrofit.study.room import ABOVE, UNKNOWN, RoomCheck
+from retrofit.units import quantity
 
 DEFERS = "The standard in force, the authority and licensed practice decide."
 NO_SOURCE = "catalogue and case, which state none"
@@ -29,6 +30,8 @@ def room_findings(comparison: Comparison, entry: Entry, room: RoomCheck) -> Iter
         yield _unknown(comparison, entry, room)
     else:
         yield from _doubtful(room)
+    if room.conditions and room.verdict != UNKNOWN:
+        yield _under_conditions(comparison, entry, room)
     change = room.change
     if change is not None and change.level in ("work", "note"):
         yield Finding(
@@ -77,6 +80,30 @@ def _above(room: RoomCheck, is_existing: bool) -> Finding:
     )
 
 
+def _under_conditions(comparison: Comparison, entry: Entry, room: RoomCheck) -> Finding:
+    """Return the finding of a room without a limit of charge: what holds instead has to be shown, not assumed."""
+    limits = [limit for limit in room.limits if limit.role == "limit" and limit.conditions]
+    because = "; ".join(dict.fromkeys(f"{limit.code_family}: {limit.unlimited_because}" for limit in limits))
+    return Finding(
+        "room-conditions",
+        "note" if entry is comparison.existing else "work",
+        "No limit of charge here, but conditions",
+        f"{_charge(room)}; {because}.{_against_lfl(comparison, entry, room)}",
+        f"Have each shown for this refrigerant: {'; '.join(room.conditions)}. {DEFERS}",
+        "; ".join(dict.fromkeys(limit.source for limit in limits)),
+    )
+
+
+def _against_lfl(comparison: Comparison, entry: Entry, room: RoomCheck) -> str:
+    """Return how the whole charge in the room stands against the LFL, in words; nothing where it cannot burn."""
+    lfl, volume = entry.refrigerant.lfl_kg_per_m3.number, comparison.case.room and comparison.case.room.volume_m3
+    if lfl is None or not volume or room.highest_kg is None:
+        return ""
+    found, limit = (quantity("density", value, ".3g") for value in (room.highest_kg / volume, lfl))
+    word = "above" if room.highest_kg / volume > lfl else "below"
+    return f" All of it in the room would be {found}, {word} the LFL of {limit}."
+
+
 def _unknown(comparison: Comparison, entry: Entry, room: RoomCheck) -> Finding:
     hazards = " and ".join(_hazards(entry))
     why = f"the refrigerant is {hazards}" if hazards else "a leak takes the place of air"
@@ -87,6 +114,8 @@ def _unknown(comparison: Comparison, entry: Entry, room: RoomCheck) -> Finding:
     elif room.charge_of != LARGEST_CIRCUIT:
         missing += (f"{option}.largest_circuit" if entry.is_new_plant else "room.largest_circuit",)
     missing += () if room.code else ("law.code",)
+    counted = [limit for limit in room.limits if limit.role == "limit"]
+    missing += tuple(dict.fromkeys(f"room.{key}" for limit in counted for key in limit.open_keys))
     return Finding(
         "room-charge",
         "unknown",

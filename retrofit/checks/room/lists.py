@@ -7,6 +7,7 @@ from functools import cache
 from importlib.resources import files
 from typing import Any
 
+from retrofit.checks.room.places import holds_there
 from retrofit.refrigerants import Refrigerant
 from retrofit.study.room import ClassList, Question
 
@@ -39,18 +40,22 @@ def class_lists(safety_class: str) -> tuple[ClassList, ...]:
     )
 
 
-def questions(refrigerant: Refrigerant, families: tuple[str, ...]) -> tuple[Question, ...]:
+def questions(
+    refrigerant: Refrigerant, families: tuple[str, ...], jurisdiction: str | None = None
+) -> tuple[Question, ...]:
     """Return what code families ask about where a charge meets a room.
 
     Args:
         refrigerant: The refrigerant.
         families: The code families.
+        jurisdiction: Whose law, None if not stated.
     """
     name = refrigerant.safety_class.text
     return tuple(
         asked(entry)
         for entry in read("questions")["question"]
         if (not entry["families"] or set(entry["families"]) & set(families))
+        and holds_there(tuple(entry.get("jurisdictions", ())), jurisdiction)
         and (not entry["classes"] or not name or name in entry["classes"])
     )
 

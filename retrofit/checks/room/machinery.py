@@ -5,10 +5,11 @@ from __future__ import annotations
 import math
 
 from retrofit.case import MachineryRoom
+from retrofit.checks.room.lists import read
 from retrofit.checks.room.working import class_of, concentration, mass, room_volume, value_flags
 from retrofit.refrigerants import Refrigerant, ppm_to_kg_per_m3
 from retrofit.study.room import Question
-from retrofit.units import SI
+from retrofit.units import SI, listed
 from retrofit.units.table import CUBIC_FOOT_M3, FOOT_M, MINUTE_S, POUND_KG
 
 CFM_M3_PER_S = CUBIC_FOOT_M3 / MINUTE_S
@@ -75,7 +76,8 @@ def machinery_questions(
         found.append(_ventilation_ashrae(refrigerant, room, charge_kg))
     if set(families) & {"EN 378", "ISO 5149"}:
         found.append(_ventilation_en378(room, charge_kg))
-    found += [_normal_ventilation(room), *_detection(refrigerant, room), *_relief(), *_own(refrigerant, charge_kg)]
+    detection = _levels(refrigerant, room, charge_kg, families) or _detection(refrigerant, room)
+    found += [_normal_ventilation(room), *detection, *_relief(), *_own(refrigerant, charge_kg)]
     return (*found, _standstill(refrigerant, p_standstill_Pa))
 
 
@@ -134,9 +136,45 @@ def _normal_ventilation(room: MachineryRoom) -> Question:
     return Question("normal ventilation", text, tuple(lines), "volume flow", flow, missing, source, "read")
 
 
+def _levels(
+    refrigerant: Refrigerant, room: MachineryRoom, charge_kg: float | None, families: tuple[str, ...]
+) -> list[Question]:
+    """Return the set points that a refrigerant has of its own; nothing for one without."""
+    fitted, stands = _fitted(room)
+    found = []
+    for row in read("detectors")["level"]:
+        if row["refrigerant"] != refrigerant.designation or not set(row["families"]) & set(families):
+            continue
+        if charge_kg is not None and not row.get("above_kg", -1.0) < charge_kg <= row.get("up_to_kg", math.inf):
+            continue
+        molar = refrigerant.molar_mass_kg_per_mol.number
+        limit = None if molar is None else ppm_to_kg_per_m3(row["ppm"], molar)
+        by_mass = "" if limit is None else f" = {concentration(limit)}"
+        lines = (f"{row['ppm']:.5g} ppm of {refrigerant.designation}{by_mass}",)
+        found.append(
+            Question(
+                "detection",
+                f"By {listed(row['families'], 'and')}: {row['text'][:1].lower()}{row['text'][1:]}{stands}",
+                lines,
+                "density",
+                limit,
+                fitted,
+                row["source"],
+                row["basis"],
+            )
+        )
+    return found
+
+
+def _fitted(room: MachineryRoom) -> tuple[tuple[str, ...], str]:
+    """Return what is missing on the detector, and what the case says of it in words."""
+    if room.detector is None:
+        return ("`detector` in [machinery_room]",), ""
+    return (), " One is fitted." if room.detector else " None is fitted."
+
+
 def _detection(refrigerant: Refrigerant, room: MachineryRoom) -> list[Question]:
-    fitted = () if room.detector is not None else ("`detector` in [machinery_room]",)
-    stands = "" if room.detector is None else " One is fitted." if room.detector else " None is fitted."
+    fitted, stands = _fitted(room)
     found = []
     parsed = class_of(refrigerant)
     if parsed is None or parsed.flammability != "1":

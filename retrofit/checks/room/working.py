@@ -53,9 +53,44 @@ class Work:
         applies_because: str,
         open_because: str = "",
         open_up_to_kg: float | None = None,
+        open_keys: tuple[str, ...] = (),
     ) -> WorkedLimit:
         """Return the limit; one with anything missing is none."""
         is_known = limit_kg is not None and not self.missing
+        return self._worked(
+            rule,
+            applies_because,
+            limit_kg=limit_kg if is_known else None,
+            decided_by=decided_by if is_known else "",
+            open_because=open_because if is_known else "",
+            open_up_to_kg=open_up_to_kg if is_known else None,
+            open_keys=open_keys if is_known and open_because else (),
+        )
+
+    def no_limit(
+        self, rule: Rule, unlimited_because: str, conditions: tuple[str, ...], applies_because: str
+    ) -> WorkedLimit:
+        """Return that a rule sets no limit here, with what it asks for instead; with anything missing that is open."""
+        is_known = not self.missing
+        return self._worked(
+            rule,
+            applies_because,
+            unlimited_because=unlimited_because if is_known else "",
+            conditions=conditions if is_known else (),
+        )
+
+    def _worked(
+        self,
+        rule: Rule,
+        applies_because: str,
+        limit_kg: float | None = None,
+        decided_by: str = "",
+        open_because: str = "",
+        open_up_to_kg: float | None = None,
+        unlimited_because: str = "",
+        conditions: tuple[str, ...] = (),
+        open_keys: tuple[str, ...] = (),
+    ) -> WorkedLimit:
         return WorkedLimit(
             method=rule.method,
             title=rule.title,
@@ -65,15 +100,18 @@ class Work:
             formula=rule.formula,
             symbols=rule.symbols,
             lines=tuple(self.lines),
-            limit_kg=limit_kg if is_known else None,
-            decided_by=decided_by if is_known else "",
+            limit_kg=limit_kg,
+            decided_by=decided_by,
             unknown_because=tuple(dict.fromkeys(self.missing)),
             flags=tuple(dict.fromkeys(self.flags)),
             source=rule.source,
             basis=rule.basis,
             applies_because=applies_because,
-            open_because=open_because if is_known else "",
-            open_up_to_kg=open_up_to_kg if is_known else None,
+            open_because=open_because,
+            open_up_to_kg=open_up_to_kg,
+            unlimited_because=unlimited_because,
+            conditions=conditions,
+            open_keys=open_keys,
         )
 
 

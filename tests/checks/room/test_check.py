@@ -24,6 +24,9 @@ ROOM = {
     "location": "II",
     "below_ground": False,
     "comfort": False,
+    "emergency_exits": True,
+    "people": 2,
+    "refrigerated": False,
     "largest_circuit": "10 kg",
     "sealed": False,
 }
@@ -229,7 +232,7 @@ def test_a_missing_input_of_the_room_is_unknown_and_named(results, key):
 
     assert (candidate.room.verdict, finding.level) == ("unknown", "unknown")
     assert f"`{key}` in [room]" in finding.fact
-    assert not candidate.verdict.is_positive
+    assert candidate.verdict == Verdict.OPEN
 
 
 def test_a_charge_nobody_knows_is_unknown(results):
@@ -250,6 +253,7 @@ def test_without_a_room_every_option_is_asked(results):
     (finding,) = [item for item in result.candidates[1].findings if item.code == "room-charge"]
     assert "flammable" in finding.fact
     assert "[room]" in finding.fact
+    assert {"room.volume", "room.location"} <= set(finding.missing)
 
 
 def test_an_unresolved_rcl_is_unknown_between_its_figures(results):
@@ -348,9 +352,43 @@ def test_the_stop_on_a_class_says_what_the_place_asks(results, jurisdiction, wor
     law = {} if jurisdiction is None else {"jurisdiction": jurisdiction}
     before = results()
     case = replace(before.case, law=Law.model_validate(law))
-    (stop,) = [
-        item for item in assess(replace(before, case=case)).candidates[1].findings if item.code == "safety-class"
-    ]
+    candidate = assess(replace(before, case=case)).candidates[1]
+    (stop,) = [item for item in candidate.findings if item.code == "safety-class"]
 
     assert stop.level == "stop"
-    assert all(part in stop.advice for part in ("whole system", "owner and authority", "nameplate", words))
+    asked = " ".join((stop.advice, *(item.text for item in candidate.room.change.asked))).lower()
+    assert all(part.lower() in asked for part in ("whole system", "owner and", "authority", "name plate", words))
+
+
+@pytest.mark.parametrize(("jurisdiction", "family"), [("EU", "EN 378"), ("GB", "EN 378"), ("US", "ASHRAE 15")])
+def test_a_jurisdiction_takes_its_usual_rules_where_no_code_is_given(results, jurisdiction, family):
+    """EN 378 in Europe, ASHRAE 15 in the US; nothing is asked for the code then."""
+    before = results(None)
+    case = replace(before.case, law=Law.model_validate({"jurisdiction": jurisdiction}))
+    room = assess(replace(before, case=case)).candidates[0].room
+
+    assert room.code == family
+    assert {limit.code_family for limit in room.limits if limit.role == "limit"} == {family}
+
+
+@pytest.mark.parametrize("location", ["II", "III"])
+def test_conditions_are_work_for_a_candidate(results, location):
+    """R513A with few people or in a machinery room: no limit by EN 378, and what holds instead has to be shown."""
+    candidate = results("EN 378", access="c", location=location).candidates[0]
+    (finding,) = [item for item in candidate.findings if item.code == "room-conditions"]
+
+    assert (candidate.room.verdict, finding.level) == ("under conditions", "work")
+    assert candidate.room.conditions
+    assert (candidate.room.deciding, candidate.room.margin_kg) == (None, None)
+    assert levels(candidate, "room-charge") == []
+
+
+def test_keys_that_settle_an_open_limit_are_named(results):
+    """100 kg of R513A in 100 m3, access c, and nobody says whether there are exits: that key settles it."""
+    candidate = results("EN 378", access="c", location="I", emergency_exits=None, largest_circuit="100 kg").candidates[
+        0
+    ]
+    (finding,) = [item for item in candidate.findings if item.code == "room-charge"]
+
+    assert finding.level == "unknown"
+    assert finding.missing == ("room.emergency_exits",)
