@@ -97,10 +97,8 @@ def case_as_taken(case: Case, on_build: OnBuild | None = None) -> Case:
     """
     if case.readings is None:
         return case
-    try:
-        return case_with_readings(case, baseline(case, fluid(case.plant.refrigerant, on_build)))
-    except RetrofitError:
-        return case
+    alone = replace(case, compare=case.compare.model_copy(update={"candidates": ()}))
+    return replace(compare(alone, on_build).case, compare=case.compare)
 
 
 def _candidate(
