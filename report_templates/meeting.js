@@ -1,7 +1,7 @@
 // The meeting page's own script: posts forms without leaving the page, and puts the newest answer in place.
 "use strict";
 (() => {
-  const PAUSE = 200, SOON = 400, NEWS = 2000, STAYS = 6000, NUMBERS = "td a.how, dd a.how", known = new Map();
+  const WINDOW = Math.random().toString(36).slice(2), PAUSE = 200, SOON = 400, NEWS = 2000, STAYS = 6000, NUMBERS = "td a.how, dd a.how", known = new Map();
   const said = document.getElementById("said"), aside = document.getElementById("aside");
   const board = () => document.getElementById("board");
   const fields = (root) => root.querySelectorAll("input:not([type=hidden]), textarea, select");
@@ -47,7 +47,9 @@
     typed = button ? null : { form, control: new AbortController() };
     if (form.action.endsWith("/freeze")) say("Writing the revision and its report…", true);
     sent = new Map([...fields(form)].map((field) => [field.id, field.value]));
-    ask(form.action, { method: "POST", body: new URLSearchParams(new FormData(form, button)), signal: typed?.control.signal });
+    const body = new URLSearchParams(new FormData(form, button));
+    body.set("window", WINDOW);  // what this window changed itself is news to others alone
+    ask(form.action, { method: "POST", body, signal: typed?.control.signal });
   }
 
   function later(form) {

@@ -9,6 +9,7 @@ RetrofitError
 ├── NoSolutionError           an equation has no solution for the values given
 ├── ModelFaultError           the property model gave an answer that fails its own checks
 ├── ReportError               the report cannot be written
+├── TargetError               a file is to be written under a name that is not for it
 ├── MissingPartError          an optional part of the installation is not there
 └── PortError                 the meeting page cannot have its port
 
@@ -112,6 +113,13 @@ class ReportError(RetrofitError):
     """The report cannot be written."""
 
     slug = "report"
+
+
+class TargetError(RetrofitError):
+    """A file is to be written under a name that is not for it."""
+
+    slug = "target"
+    exit_code = 2
 
 
 class MissingPartError(RetrofitError):

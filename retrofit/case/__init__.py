@@ -22,7 +22,7 @@ from retrofit.case.reader import case_from_data, read_case
 from retrofit.case.readings import Controls, Readings
 from retrofit.case.room import MachineryRoom, Room
 from retrofit.case.schema import SCHEMA_FILE, case_schema
-from retrofit.case.template import new_case_text
+from retrofit.case.template import is_untouched, new_case_text
 from retrofit.case.thresholds import Threshold, Thresholds
 from retrofit.case.year import Bin, Climate, Year
 
@@ -79,6 +79,7 @@ __all__ = [
     "as_value",
     "case_from_data",
     "case_schema",
+    "is_untouched",
     "laid_over",
     "meaning",
     "new_case_text",

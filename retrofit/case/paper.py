@@ -16,7 +16,7 @@ from retrofit.case.values import FileValue, Refrigerant, Text
 from retrofit.errors import QuantityError
 from retrofit.units import described, listed, shown
 
-MOST_REVISIONS, MOST_CONDITIONS = 30, 12
+MOST_REVISIONS, MOST_CONDITIONS = 100, 12
 _NAME = Text(120)
 _SENTENCE = Text(300)
 _REFRIGERANT = Refrigerant()

@@ -9,7 +9,7 @@ from pydantic import Field
 
 from retrofit.case.numbers import Number
 from retrofit.case.table import Items, Table, WhyDefault, key
-from retrofit.case.values import AbsolutePressure, Choice, Quantity, Refrigerant
+from retrofit.case.values import PRESSURE_LIMIT, Choice, Quantity, Refrigerant
 from retrofit.units import standard_atmosphere_Pa
 
 MOST_CANDIDATES = 40
@@ -36,7 +36,6 @@ CONTROLLERS = ("fixed to refrigerant", "selectable", "none")
 _METAL = Choice(METALS, (("ALUMINUM", "aluminium"), ("STAINLESS STEEL", "stainless"), ("IRON", "steel")))
 _REFRIGERANT = Refrigerant()
 
-_NAMEPLATE = AbsolutePressure("1 bar a", "300 bar a", "nameplates of plants lie within it")
 _TEMPERATURE = Quantity("temperature", "-120 degC", "150 degC", "vapour-compression plants work within it")
 _SUPERHEAT = Quantity("temperature difference", "0 K", "80 K", "more points to a reading error")
 _SUBCOOLING = Quantity("temperature difference", "0 K", "50 K", "counted below the bubble point")
@@ -67,15 +66,15 @@ class Plant(Table):
         float | None,
         Quantity("temperature", "-20 degC", "80 degC", "air around plants lies within it", example="43 degC"),
     ] = key("highest_ambient", "Hottest air around plant and vessels, also at standstill.", None)
-    high_side_limit_Pa: Annotated[float | None, _NAMEPLATE] = key(
+    high_side_limit_Pa: Annotated[float | None, PRESSURE_LIMIT] = key(
         "high_side_limit", "Maximum pressure on the nameplate of the high side.", None
     )
-    low_side_limit_Pa: Annotated[float | None, _NAMEPLATE] = key(
+    low_side_limit_Pa: Annotated[float | None, PRESSURE_LIMIT] = key(
         "low_side_limit", "Maximum pressure on the nameplate of the low side.", None
     )
-    relief_setting_Pa: Annotated[
-        float | None, AbsolutePressure("1 bar a", "300 bar a", "relief valves of plants lie within it")
-    ] = key("relief_setting", "Pressure at which the relief valve of the high side opens.", None)
+    relief_setting_Pa: Annotated[float | None, PRESSURE_LIMIT] = key(
+        "relief_setting", "Pressure at which the relief valve of the high side opens.", None
+    )
     evaporator: Annotated[str | None, Choice(("direct expansion", "flooded", "pumped"))] = key(
         "evaporator", "How the evaporators are fed.", None
     )

@@ -9,7 +9,7 @@ from pydantic import Field
 from retrofit.case.compressor import CURRENT, PHASES, POWER_FACTOR, VOLTAGE
 from retrofit.case.exchangers import FLOW, SPECIFIC_HEAT
 from retrofit.case.table import Items, Table, key
-from retrofit.case.values import AbsolutePressure, Quantity, Text
+from retrofit.case.values import PRESSURE_LIMIT, AbsolutePressure, Quantity, Text
 
 MOST_FAN_STEPS = 20
 _PRESSURE = Annotated[float | None, AbsolutePressure("0.01 bar a", "300 bar a", "gauges of plants lie within it")]
@@ -80,7 +80,9 @@ class Controls(Table):
 
     low_pressure_cut_out_Pa: _SET = key("low_pressure_cut_out", "Low-pressure switch stops the compressor.", None)
     low_pressure_cut_in_Pa: _SET = key("low_pressure_cut_in", "Low-pressure switch lets it start again.", None)
-    high_pressure_cut_out_Pa: _SET = key("high_pressure_cut_out", "High-pressure switch stops the compressor.", None)
+    high_pressure_cut_out_Pa: Annotated[float | None, PRESSURE_LIMIT] = key(
+        "high_pressure_cut_out", "High-pressure switch stops the compressor.", None
+    )
     rack_set_point_Pa: _SET = key("rack_set_point", "Suction pressure that the control of the rack holds.", None)
     evaporator_regulator_Pa: _SET = key(
         "evaporator_regulator", "Pressure that the evaporator pressure regulator holds.", None

@@ -289,6 +289,7 @@ match = "mean"                   # refrigerants are compared at equal mean (or d
 # [options.R454C]                # where one option differs: keys of [money.change] and these
 # leak_rate = "2 %"
 # charge = "40 kg"
+# largest_circuit = "20 kg"      # of a new plant: what one leak can release
 # seasonal_cop = 3.1             # of a new plant, fans and pumps included
 
 # [plus_minus]                   # how far inputs may be off, each under its full key
@@ -308,3 +309,17 @@ def new_case_text() -> str:
     Returns: The text of the file. [-]
     """
     return _TEXT.format(schema=SCHEMA_FILE)
+
+
+def is_untouched(text: str) -> bool:
+    """Return whether a case file is the one that `new_case_text` makes, so that its values are placeholders.
+
+    Args:
+        text: The text of the file. [-]
+    """
+    return _bare(text) == _bare(new_case_text())
+
+
+def _bare(text: str) -> list[str]:
+    """Return the lines of a file that say something, without remarks and blanks."""
+    return [line.split("#")[0].strip() for line in text.splitlines() if line.split("#")[0].strip()]

@@ -29,6 +29,7 @@ from retrofit.units import (
 )
 
 LONGEST_DESIGNATION = 40  # characters
+ROUNDING_PA = 0.01  # the same pressure written as gauge and as absolute may differ by that
 _DIRECTION_MARKS = "\u061c\u200e\u200f\u202a\u202b\u202c\u202d\u202e\u2066\u2067\u2068\u2069"
 _NUMBER_PATTERN = r"^\s*[+\u2212-]?([0-9]+\.?[0-9]*|\.[0-9]+)([eE][+-]?[0-9]+)?\s*"
 
@@ -114,7 +115,10 @@ class Quantity(FileValue):
 
 @dataclass(frozen=True)
 class AbsolutePressure(FileValue):
-    """A pressure that says absolute or gauge, held as absolute; a gauge counts from the air at the plant."""
+    """A pressure that says absolute or gauge, held as absolute; a gauge counts from the air at the plant.
+
+    The ends of the range do so too: a limit that has to stand above the air has a gauge pressure as its lower end.
+    """
 
     low: str
     high: str
@@ -130,17 +134,38 @@ class AbsolutePressure(FileValue):
 
     def read(self, value: object, p_ambient_Pa: float | None = None) -> float:
         """Return the absolute pressure in Pa; raises LookupError if a gauge one is read without `p_ambient_Pa`."""
-        pressure = parse_pressure(value)
-        if pressure.is_gauge and p_ambient_Pa is None:
-            raise LookupError("a gauge pressure needs the air pressure at the plant; pass it as context")
-        p_Pa = pressure.absolute_Pa(p_ambient_Pa or 0.0)
-        if not parse_pressure(self.low).value_Pa <= p_Pa <= parse_pressure(self.high).value_Pa:
+        p_Pa = _absolute_Pa(value, p_ambient_Pa)
+        low_Pa, high_Pa = self.ends_Pa(p_ambient_Pa)
+        if not low_Pa - ROUNDING_PA <= p_Pa <= high_Pa + ROUNDING_PA:
             raise QuantityError(outside(value, self.low, self.high, self.reason))
         return p_Pa
+
+    def ends_Pa(self, p_ambient_Pa: float | None) -> tuple[float, float]:
+        """Return the lowest and the highest pressure allowed at a plant, absolute.
+
+        Args:
+            p_ambient_Pa: Air pressure at the plant. [Pa]
+        Raises: LookupError if an end is a gauge pressure and the air pressure is None.
+        """
+        return _absolute_Pa(self.low, p_ambient_Pa), _absolute_Pa(self.high, p_ambient_Pa)
 
     def json_schema(self) -> dict[str, Any]:
         """Return the pattern of the text."""
         return {"type": "string", "pattern": unit_pattern("pressure"), "examples": [self.sample()]}
+
+
+def _absolute_Pa(value: object, p_ambient_Pa: float | None) -> float:
+    pressure = parse_pressure(value)
+    if pressure.is_gauge and p_ambient_Pa is None:
+        raise LookupError("a gauge pressure needs the air pressure at the plant; pass it as context")
+    return pressure.absolute_Pa(p_ambient_Pa or 0.0)
+
+
+# A part that bears less than 0.5 bar above the air is no pressure equipment (Directive 2014/68/EU, article 1); the
+# highest limits of plants are those of gas coolers for R744, at some 140 bar.
+PRESSURE_LIMIT = AbsolutePressure(
+    "0.5 bar g", "200 bar g", "a limit stands clearly above the air at the plant, and no such plant is built for more"
+)
 
 
 @dataclass(frozen=True)

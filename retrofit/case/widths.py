@@ -20,7 +20,7 @@ from retrofit.case.rules import ORDERS, Order
 from retrofit.case.values import AbsolutePressure, FileValue, Quantity, designation_of
 from retrofit.case.written import Written
 from retrofit.errors import QuantityError
-from retrofit.units import close_to, parse_pressure, parse_quantity, quoted, shown
+from retrofit.units import close_to, parse_quantity, quoted, shown
 
 _DIFFERENCES = {"temperature": "temperature difference", "pressure": "pressure difference"}
 _ROUNDING = 1e-9
@@ -91,7 +91,7 @@ def _width(written: Written, key: str, raw: object) -> float:
     width = whole.read(raw) if whole else _read(how, raw, value)
     if not width > 0.0:
         raise QuantityError(f"{quoted(str(raw))} is no width; write one above 0, or leave the line out")
-    low, high = _limits(how)
+    low, high = _limits(how, written.p_ambient_Pa)
     inner = _ROUNDING * max(abs(low), abs(high))
     if not whole and (
         value - width < low - inner or value + width > high + inner or (_above_low(how) and value - width <= low)
@@ -176,11 +176,11 @@ def _read(how: Quantity | Number | AbsolutePressure, raw: object, value: float) 
     return parse_quantity(raw, _DIFFERENCES.get(kind, kind))
 
 
-def _limits(how: Quantity | Number | AbsolutePressure) -> tuple[float, float]:
+def _limits(how: Quantity | Number | AbsolutePressure, p_ambient_Pa: float) -> tuple[float, float]:
     if isinstance(how, Number):
         return how.low, how.high
     if isinstance(how, AbsolutePressure):
-        return parse_pressure(how.low).value_Pa, parse_pressure(how.high).value_Pa
+        return how.ends_Pa(p_ambient_Pa)
     return parse_quantity(how.low, how.kind), parse_quantity(how.high, how.kind)
 
 

@@ -6,6 +6,7 @@ import datetime
 from collections.abc import Sequence
 from dataclasses import replace
 
+from retrofit.case import is_untouched
 from retrofit.checks.gates import GATES, GATES_OF_NEW_PLANT
 from retrofit.checks.hardware import hardware_findings, hardware_rows
 from retrofit.checks.law import law_findings, with_law
@@ -16,6 +17,7 @@ from retrofit.study import Comparison, Entry, Finding, Level, Verdict
 LEVELS = tuple(Level)
 # The order of checking: what rules options out first in practice comes first. A code counts from its beginning.
 ORDER = (
+    "placeholders",
     "not-computed",
     "law",
     "ozone",
@@ -37,6 +39,18 @@ ORDER = (
     "oil",
     "capacity",
     "condenser",
+)
+
+
+PLACEHOLDERS = Finding(
+    "placeholders",
+    Level.UNKNOWN,
+    "The values are placeholders",
+    "The case is the template as it was written; no value in it is of a plant.",
+    "Fill in the case first.",
+    "the case file",
+    ("plant.refrigerant", "duty.cooling", "duty.evaporating", "duty.condensing"),
+    decisive=True,
 )
 
 
@@ -66,6 +80,8 @@ def _assessed(comparison: Comparison, entry: Entry) -> Entry:
     found += room_findings(comparison, entry, room)
     if entry.status != "ok":
         found.insert(0, _not_computed(entry))
+    if is_untouched(comparison.case.text):
+        found.insert(0, PLACEHOLDERS)
     found.sort(key=_place)
     return replace(entry, findings=tuple(found), hardware=rows, room=room, verdict=verdict(found))
 

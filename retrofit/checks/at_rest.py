@@ -9,6 +9,7 @@ from __future__ import annotations
 from collections.abc import Iterator
 
 from retrofit.checks.corners import conditions, worst
+from retrofit.checks.gauge import share_of_limit, share_text, times_below
 from retrofit.checks.thresholds import thresholds_for
 from retrofit.study import AtRest, Comparison, Entry, Finding, Level, RestState
 from retrofit.units import quantity
@@ -64,21 +65,22 @@ def _no_pressure(comparison: Comparison, entry: Entry, rest: AtRest) -> Iterator
 def _against_plates(comparison: Comparison, entry: Entry, rest: AtRest) -> Iterator[Finding]:
     plant, limit = comparison.case.plant, thresholds_for(comparison.case)["standstill"]
     assert rest.p_Pa is not None
-    gauge = rest.p_Pa - plant.ambient_pressure_Pa
+    air = plant.ambient_pressure_Pa
     plates = {
-        name: p_Pa - plant.ambient_pressure_Pa
+        name: p_Pa
         for name, p_Pa in (("low side", plant.low_side_limit_Pa), ("high side", plant.high_side_limit_Pa))
         if p_Pa is not None
     }
-    at_rest = f"{quantity('gauge pressure', gauge, '.1f')} at rest at the highest ambient temperature"
+    at_rest = f"{quantity('gauge pressure', rest.p_Pa - air, '.1f')} at rest at the highest ambient temperature"
     if plates:
         side = min(plates, key=lambda name: plates[name])
-        if limit.level(gauge / plates[side]) == Level.STOP:
+        share = share_of_limit(rest.p_Pa, plates[side], air)
+        if limit.level(share) == Level.STOP:
             yield Finding(
                 "standstill",
                 Level.STOP,
                 "Pressure at rest above the rating",
-                f"{at_rest}, {gauge / plates[side]:.0%} of the {quantity('gauge pressure', plates[side], '.1f')} of "
+                f"{at_rest}, {share_text(share)} of the {quantity('gauge pressure', plates[side] - air, '.1f')} of "
                 f"the {side}, against {limit.figures_in('of it')}.",
                 "A lower charge or a relief valve does not lower the pressure at rest while liquid is left.",
                 limit.source,
@@ -107,22 +109,23 @@ def relief(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             margin.source,
         )
         return
-    setting, facts = plant.relief_setting_Pa - air, []
-    operating = worst(entry, "p_cond_Pa").value - air if conditions(entry) else None
-    rest = None if entry.at_rest is None or entry.at_rest.p_Pa is None else entry.at_rest.p_Pa - air
-    plate = None if plant.high_side_limit_Pa is None else plant.high_side_limit_Pa - air
-    if operating is not None and margin.level_below(setting / operating) == Level.STOP:
-        facts.append(f"{quantity('gauge pressure', operating, '.1f')} is reached in operation")
-    if rest is not None and rest > setting:
-        facts.append(f"{quantity('gauge pressure', rest, '.1f')} at rest")
-    if plate is not None and setting > plate * (1.0 + ABOVE_PLATE):
-        facts.append(f"the nameplate says {quantity('gauge pressure', plate, '.1f')}")
+    setting, plate, facts = plant.relief_setting_Pa, plant.high_side_limit_Pa, []
+    operating = worst(entry, "p_cond_Pa").value if conditions(entry) else None
+    rest = entry.at_rest.p_Pa if entry.at_rest else None
+    if operating is not None:
+        times = times_below(share_of_limit(operating, setting, air))
+        if margin.level_below(times) == Level.STOP:
+            facts.append(f"{quantity('gauge pressure', operating - air, '.1f')} is reached in operation")
+    if rest is not None and share_of_limit(rest, setting, air) > 1.0:
+        facts.append(f"{quantity('gauge pressure', rest - air, '.1f')} at rest")
+    if plate is not None and share_of_limit(setting, plate, air) > 1.0 + ABOVE_PLATE:
+        facts.append(f"the nameplate says {quantity('gauge pressure', plate - air, '.1f')}")
     if facts:
         yield Finding(
             "relief",
             Level.STOP,
             "Relief valve does not fit",
-            f"it opens at {quantity('gauge pressure', setting, '.1f')}; {'; '.join(facts)}.",
+            f"it opens at {quantity('gauge pressure', setting - air, '.1f')}; {'; '.join(facts)}.",
             "Setting, capacity and date of the relief valve; whether its material suits the refrigerant.",
             margin.source,
         )

@@ -8,6 +8,7 @@ from __future__ import annotations
 from collections.abc import Iterator
 
 from retrofit.checks.corners import Corner, worst
+from retrofit.checks.gauge import share_of_limit, share_text
 from retrofit.checks.thresholds import Threshold, thresholds_for
 from retrofit.study import AtRest, Comparison, Entry, Finding, Level
 from retrofit.study.hardware.conditions import hottest_day_keys, hottest_inlet_K
@@ -81,7 +82,7 @@ def high_side(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             "high-side",
             Level.UNKNOWN,
             "Nameplate pressure not given",
-            "The condensing pressure cannot be compared with what the high side is built for.",
+            f"{_condensing_words(entry)} cannot be compared with what the high side is rated for.",
             "Give `high_side_limit` in [plant].",
             limit.source,
             ("plant.high_side_limit",),
@@ -93,20 +94,27 @@ def high_side(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
     if corner is None:
         return  # "not computed" is said once, and is decisive
     # Nameplates and switches count from the air around them.
-    gauge = corner.value - plant.ambient_pressure_Pa
-    name_plate = plant.high_side_limit_Pa - plant.ambient_pressure_Pa
-    level = limit.level(gauge / name_plate)
+    air = plant.ambient_pressure_Pa
+    share = share_of_limit(corner.value, plant.high_side_limit_Pa, air)
+    level = limit.level(share)
     if level is not None:
         yield Finding(
             "high-side",
             level,
             "Condensing pressure close to or above the nameplate",
-            f"{quantity('gauge pressure', gauge, '.1f')}"
-            f"{corner.where or ' at the condensing temperature of the case'}, {gauge / name_plate:.0%} of the "
-            f"nameplate's {quantity('gauge pressure', name_plate, '.1f')}, against {limit.figures_in('of it')}.",
+            f"{quantity('gauge pressure', corner.value - air, '.1f')}"
+            f"{corner.where or ' at the condensing temperature of the case'}, {share_text(share)} of the "
+            f"nameplate's {quantity('gauge pressure', plant.high_side_limit_Pa - air, '.1f')}, against "
+            f"{limit.figures_in('of it')}.",
             "Check switch, relief valve and vessel, and the hottest day if it is not given.",
             limit.source,
         )
+
+
+def _condensing_words(entry: Entry) -> str:
+    if entry.duty is None:
+        return "The condensing pressure"
+    return f"Condensing at {quantity('pressure', entry.duty.p_cond_Pa, '.1f')}"
 
 
 def _cannot_condense(rest: AtRest, limit: Threshold) -> Finding:

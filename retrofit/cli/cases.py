@@ -13,18 +13,22 @@ from retrofit.cli.shell import fail, guarded
 
 @click.command()
 @click.argument("case_file", type=CASE, metavar="FILE")
-@click.option("--force", is_flag=True, help="Overwrite files that are there.")
+@click.option("--force", is_flag=True, help="Overwrite files that are there; never through a link.")
 @guarded
 def new(case_file: Path, force: bool) -> None:
     """Write a new case FILE to fill in, and its schema for editors beside it."""
     from retrofit.case import SCHEMA_FILE, case_schema, new_case_text
     from retrofit.report.files import write_whole
+    from retrofit.report.targets import check_case_file, check_endings, check_replaced, is_same, is_schema
 
     schema = case_file.parent / SCHEMA_FILE
-    if case_file.name == SCHEMA_FILE:
+    if case_file.name == SCHEMA_FILE or is_same(case_file, schema):
         fail(f"{SCHEMA_FILE} is the name of the schema written beside the case; choose another name", 2)
-    if case_file.exists() and not force:
-        fail(f"{case_file} is there already; choose another name or add --force", 1)
+    check_endings({"toml": case_file})
+    for file in (case_file, schema):
+        check_case_file(file)
+    check_replaced(case_file, lambda path: False, "may hold work of its own", force=force)
+    check_replaced(schema, is_schema, "is not a schema of case files", force=force)
     write_whole(case_file, new_case_text())
     write_whole(schema, json.dumps(case_schema(), indent=1) + "\n")
     click.echo(f"Wrote {case_file} and {schema}. Fill it in, then: retrofit check {case_file}")

@@ -9,6 +9,7 @@ from typing import TYPE_CHECKING
 from retrofit.cli.shell import say_build
 
 if TYPE_CHECKING:
+    from retrofit.case import Case
     from retrofit.study import Comparison
 
 
@@ -21,10 +22,21 @@ def compared(case_file: Path, on: datetime | None) -> Comparison:
     Raises: CaseFileError if the file cannot be used.
     """
     from retrofit.case import read_case
+
+    return assessed(read_case(case_file), on)
+
+
+def assessed(case: Case, on: datetime | None) -> Comparison:
+    """Return the assessed result of a case.
+
+    Args:
+        case: The case.
+        on: Day to read the tables of law for; today if None.
+    """
     from retrofit.checks import assess
     from retrofit.study import compare as compare_case
 
-    return assess(compare_case(read_case(case_file), say_build), on.date() if on else None)
+    return assess(compare_case(case, say_build), on.date() if on else None)
 
 
 def with_life_if_asked(comparison: Comparison) -> Comparison:

@@ -27,6 +27,9 @@ on_option = click.option(
     metavar="DATE",
     help="Day to read the tables of law for, as 2027-04-01; today if left out.",
 )
+force_option = click.option(
+    "--force", is_flag=True, help="Overwrite files that are there; never those that a case is made of."
+)
 json_option = click.option("--json", "as_json", is_flag=True, help="One JSON object in SI base units.")
 
 

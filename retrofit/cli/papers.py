@@ -9,10 +9,11 @@ from typing import TYPE_CHECKING
 
 import click
 
-from retrofit.cli.computed import compared, with_life_if_asked
+from retrofit.cli.computed import assessed, with_life_if_asked
 from retrofit.cli.options import (
     CASE,
     OWN_NAME,
+    force_option,
     form_option,
     json_option,
     on_option,
@@ -35,6 +36,7 @@ READ_WITH = {"html": " Open it in a browser; print it from there for paper or PD
 @report_units_option
 @click.option("--templates", type=CASE, help="Folder of your own templates, laid over the built-in ones.")
 @on_option
+@force_option
 @guarded
 def report(
     case_file: Path,
@@ -44,14 +46,19 @@ def report(
     units: str,
     templates: Path | None,
     on: datetime | None,
+    force: bool,
 ) -> None:
     """Write the report of a CASE as one HTML file, as PDF or as spreadsheet, each whole or not at all."""
+    from retrofit.case import read_case
     from retrofit.report.files import write_whole
     from retrofit.report.outputs import render_forms, require
+    from retrofit.report.targets import check_outputs
 
     paths = _report_paths(case_file, {"html": output, "pdf": pdf, "xlsx": xlsx})
     require(paths)
-    comparison = with_life_if_asked(compared(case_file, on))
+    case = read_case(case_file)
+    check_outputs(paths.values(), case, templates, force=force)
+    comparison = with_life_if_asked(assessed(case, on))
     contents = render_forms(paths, comparison, units, templates, made_at=datetime.now().astimezone())
     for form, path in paths.items():
         write_whole(path, contents[form])
@@ -60,11 +67,14 @@ def report(
 
 def _report_paths(case_file: Path, asked: dict[str, Path | None]) -> dict[str, Path]:
     """Return where to write each form asked for; of several, none over another or over the case."""
+    from retrofit.report.targets import check_endings
+
     named = {form: path for form, path in asked.items() if path is not None} or {"html": OWN_NAME}
     paths = {form: Path(f"{case_file.stem}.{form}") if path == OWN_NAME else path for form, path in named.items()}
     places = [case_file.resolve(), *(path.resolve() for path in paths.values())]
     if len(set(places)) < len(places):
         raise click.UsageError("the files to write have to differ from each other and from the case")
+    check_endings(paths, {form: f"write --{form} and the name" for form in ("pdf", "xlsx")})
     return paths
 
 
@@ -72,12 +82,14 @@ def _report_paths(case_file: Path, asked: dict[str, Path | None]) -> dict[str, P
 @click.argument("report_file", type=CASE, metavar="REPORT")
 @json_option
 @click.option("--case", "case_file", type=CASE, metavar="FILE", help="Write the case of the REPORT to FILE instead.")
-@click.option("--force", is_flag=True, help="Overwrite the FILE of --case if it is there.")
+@click.option("--force", is_flag=True, help="Overwrite the FILE of --case if it is there; never the REPORT.")
 @guarded
 def rerun(report_file: Path, as_json: bool, case_file: Path | None, force: bool) -> None:
     """Compute the case that an HTML REPORT carries again, and say whether anything differs and why."""
     from retrofit.report import carried
 
+    if case_file:
+        _check_case_file(case_file, report_file)
     kept = carried.read_carried(report_file)
     if case_file:
         _write_case(kept, case_file, force)
@@ -90,12 +102,21 @@ def rerun(report_file: Path, as_json: bool, case_file: Path | None, force: bool)
     sys.exit(1 if found.differs else 0)
 
 
+def _check_case_file(case_file: Path, report_file: Path) -> None:
+    from retrofit.report.targets import check_case_file, check_endings, is_same
+
+    if is_same(case_file, report_file):
+        fail(f"{case_file} is the report itself, which is never overwritten; choose another name", 1)
+    check_endings({"toml": case_file})
+    check_case_file(case_file)
+
+
 def _write_case(kept: Carried, case_file: Path, force: bool) -> None:
     from retrofit.report.files import write_whole
+    from retrofit.report.targets import check_replaced
     from retrofit.units import shown
 
-    if case_file.exists() and not force:
-        fail(f"{case_file} is there already; choose another name or add --force", 1)
+    check_replaced(case_file, lambda path: False, "may hold work of its own", force=force)
     write_whole(case_file, kept.case_text)
     click.echo(f"Wrote {case_file}, the case of {kept.name}.")
     if "case" in kept.altered:
@@ -116,6 +137,7 @@ def _write_case(kept: Carried, case_file: Path, force: bool) -> None:
 @units_option
 @click.option("--templates", type=CASE, help="Folder of your own templates, laid over the built-in ones.")
 @on_option
+@force_option
 @guarded
 def commission(
     case_file: Path,
@@ -126,19 +148,26 @@ def commission(
     units: str,
     templates: Path | None,
     on: datetime | None,
+    force: bool,
 ) -> None:
     """Write job card and commissioning sheet of the change of a CASE to one REFRIGERANT as one HTML file.
 
     A refrigerant that a check stops, that is not computed or that is a new plant is refused.
     """
+    from retrofit.case import read_case
     from retrofit.case.exchangers import INLET
     from retrofit.refrigerants import find
     from retrofit.report import render_site_copy, write_report
+    from retrofit.report.targets import check_endings, check_outputs
 
     name = find(refrigerant).designation
     T_inlet_K = None if inlet is None else INLET.read(inlet)
+    path = output or Path(f"{case_file.stem}-{name}.html")
+    case = read_case(case_file)
+    check_outputs([path], case, templates, force=force)
+    check_endings({"html": path})
     html = render_site_copy(
-        compared(case_file, on),
+        assessed(case, on),
         name,
         units,
         templates,
@@ -146,6 +175,5 @@ def commission(
         T_inlet_today_K=T_inlet_K,
         despite=despite,
     )
-    path = output or Path(f"{case_file.stem}-{name}.html")
     write_report(path, html)
     click.echo(f"Wrote {path}. Print it from a browser and take it to the plant.")

@@ -9,10 +9,12 @@ from __future__ import annotations
 import datetime
 import os
 from collections.abc import Callable
+from pathlib import Path
 
 from retrofit.case import read_case
 from retrofit.case.source import parsed
 from retrofit.meeting.desk import Source
+from retrofit.meeting.pair import repair
 from retrofit.meeting.session import Session
 
 
@@ -32,6 +34,7 @@ def session_of(
     Raises: CaseFileError with every problem of the file.
     """
     case = read_case(path)
+    repair(Path(case.path).resolve())
     return Session(Source(case, parsed(case.text, case.path)[0], on), units, on_build)
 
 

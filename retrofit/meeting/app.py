@@ -39,6 +39,7 @@ if TYPE_CHECKING:
     from flask import Flask, Request, Response
 
 PART = "X-Part"  # asks for the changing part of the page alone, as the script does
+LONGEST_WINDOW = 40  # characters of the name a window gives itself
 BACK = "The page is at /."
 
 
@@ -56,7 +57,7 @@ class Meeting:
         """Return the page, or the part of it that changes."""
         moment = self.session.moment()
         board = build_board(moment, self.session.source, self.pictures, self.writer.said)
-        cautions, nonce = render_cautions(board), secrets.token_urlsafe(16)
+        cautions, nonce = render_cautions(board, is_topmost=False), secrets.token_urlsafe(16)
         template = "meeting-board.html" if is_part else "meeting.html"
         html = filled(template, board=board, page=board, cautions=cautions, token=self.token, nonce=nonce)
         return _html(told(html, UNIT_SYSTEMS[moment.state.units]), page_policy(nonce, str(cautions)))
@@ -64,17 +65,19 @@ class Meeting:
     def act(self, request: Request) -> None:
         """Do what a form asks for; what hinders it is shown on the page."""
         word = request.form.get("act", "set")
+        version, window = _seen(request)
         if word in ("undo", "redo"):
-            (self.session.undo if word == "undo" else self.session.redo)()
+            (self.session.undo if word == "undo" else self.session.redo)(version, window)
             return
-        seen = request.form.get("seen", "")
-        version = int(seen) if seen.isascii() and seen.isdigit() and len(seen) < 12 else 0
         form = {name: request.form[name] for name in request.form}
         has_inputs = any(name.startswith("in.") for name in form)
-        self.session.apply(change_of(self.session.source, form), version, has_inputs)
+        self.session.apply(change_of(self.session.source, form), version, has_inputs, window)
 
     def freeze(self, request: Request) -> None:
         """Begin to write the present state as a revision; what hinders it is shown on the page."""
+        if news := self.session.unseen(*_seen(request)):
+            self.session.complain(f"{news} by another window meanwhile; look at it, then freeze")
+            return
         what = " ".join(plain(request.form.get("what", "")).split())[:LONGEST_WHAT] or "without remark"
         self.writer.begin(what, datetime.now().astimezone())
 
@@ -129,6 +132,13 @@ class Meeting:
         response = Response(svg, mimetype="image/svg+xml")
         response.headers["Cache-Control"] = "private, max-age=3600, immutable"
         return secure(response, PICTURE_POLICY)
+
+
+def _seen(request: Request) -> tuple[int, str]:
+    """Return the version of the page that a form comes from, 0 if it says none, and its window."""
+    seen = request.form.get("seen", "")
+    version = int(seen) if seen.isascii() and seen.isdigit() and len(seen) < 12 else 0
+    return version, request.form.get("window", "")[:LONGEST_WINDOW]
 
 
 def _html(html: str, policy: str) -> Response:

@@ -13,7 +13,8 @@ from retrofit.meeting.how import linked
 from retrofit.meeting.inputs import Group, input_groups, offered
 from retrofit.meeting.lineup import Lineup, lineup
 from retrofit.meeting.pictures import Picture, Pictures, View
-from retrofit.meeting.session import Moment, Refused
+from retrofit.meeting.refused import Refused
+from retrofit.meeting.session import Moment
 from retrofit.meeting.side import Side, side_by_side
 from retrofit.meeting.state import State
 from retrofit.meeting.weighing import Weighing, weighing
@@ -68,6 +69,7 @@ class Board:
     groups: tuple[Group, ...]
     refused: Mapping[str, Refused]
     complaints: tuple[str, ...]
+    meanwhile: str
     answer: Answered
     convention: str
     band: str
@@ -150,6 +152,7 @@ def build_board(moment: Moment, source: Source, pictures: Pictures, writing: str
         groups=input_groups(moment, whole.case, source, keys, units),
         refused=moment.refused,
         complaints=tuple(item.why for field, item in moment.refused.items() if field not in known),
+        meanwhile=moment.meanwhile,
         answer=answered(view, units),
         convention=convention(whole),
         band=band_text(view, units),

@@ -9,9 +9,9 @@ from retrofit.case.values import designation_of, is_hidden
 from retrofit.errors import QuantityError
 from retrofit.meeting.desk import Source
 from retrofit.meeting.inputs import LABELS, LONGEST_INPUT, SIDES, nudged, offered, text_now
-from retrofit.meeting.session import RefusedError
+from retrofit.meeting.refused import RefusedError
 from retrofit.meeting.state import State, with_item
-from retrofit.meeting.weighing import HEAVIEST
+from retrofit.meeting.weighing import HEAVIEST, USUAL
 from retrofit.study.criteria import CRITERIA
 from retrofit.units import UNIT_SYSTEMS
 
@@ -187,9 +187,12 @@ def _weigh(asked: Asked, about: str) -> tuple[State, str]:
         text = asked.form.get(f"w.{name}")
         if text is None:
             continue
-        if not text.strip().isascii() or not text.strip().isdigit() or int(text[:6]) > HEAVIEST:
+        text = text.strip()
+        is_number = text.isascii() and text.isdigit() and len(text) <= LONGEST_INPUT
+        if not is_number or int(text) > HEAVIEST:
             raise RefusedError(f"a weight is a whole number from 0 to {HEAVIEST}", f"w.{name}", text[:LONGEST_INPUT])
-        weights[name] = int(text)
+        if int(text) != dict(asked.seen.weights).get(name, USUAL):
+            weights[name] = int(text)
     return replace(asked.now, weights=tuple(weights.items())), "weights"
 
 

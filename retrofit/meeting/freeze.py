@@ -1,6 +1,6 @@
 """Freezing: the meeting's case as a whole case file of its own beside the original, and the report of it.
 
-The only place where a meeting writes anything. Names are made here; none comes from the page.
+Everything is computed first, then `pair` writes both. Names are made here; none comes from the page.
 """
 
 from __future__ import annotations
@@ -8,27 +8,28 @@ from __future__ import annotations
 import os
 import string
 import tomllib
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from datetime import datetime
 from pathlib import Path
 from typing import Any
 
-from retrofit.case import as_key, as_toml, laid_over, read_case
-from retrofit.case.paper import MOST_REVISIONS as MOST_ROWS
+from retrofit.case import as_key, as_toml, laid_over
+from retrofit.case.paper import MOST_REVISIONS, Revision, RevisionValue
 from retrofit.case.positions import KeyPath, value_spans
+from retrofit.case.reader import case_from_data
+from retrofit.case.source import parsed, text_of
 from retrofit.checks import assess
-from retrofit.errors import ReportError
+from retrofit.errors import CaseFileError, QuantityError, ReportError
 from retrofit.meeting.desk import Source, has_life
+from retrofit.meeting.pair import publish, repair
 from retrofit.meeting.state import State
-from retrofit.report import render_html, write_report
-from retrofit.report.files import write_whole
+from retrofit.report import render_html
 from retrofit.study import Comparison, compare
 from retrofit.study.criteria import CRITERIA
 from retrofit.study.life import with_life
 
 LONGEST_WHAT = 200  # characters
-MOST_REVISIONS = 100
 
 
 @dataclass(frozen=True)
@@ -52,18 +53,19 @@ def freeze(source: Source, state: State, what: str, at: datetime) -> Frozen:
     Returns: The revision.
     Raises: ReportError if the files cannot be written; CaseFileError if the case cannot be read back.
     """
-    used = {row.rev.lower() for row in source.case.report.revisions} if source.case.report else set()
-    letter, path = _free(Path(source.case.path), used)
-    data = _with_revision(laid_over(source.data, dict(state.changes), state.added), letter, what, at)
-    report = path.with_suffix(".html")
-    try:
-        write_whole(path, case_text(source, data) + _minutes(source, state, letter, what, at))
-        result = whole(assess(compare(read_case(path)), source.on))
-        write_report(report, render_html(result, units=state.units, made_at=at))
-    except BaseException:
-        path.unlink(missing_ok=True)  # both files or none
-        raise
-    return Frozen(letter.upper(), what, path.name, report.name)
+    original = Path(source.case.path).resolve()
+    repair(original)
+    for _ in range(MOST_REVISIONS):
+        rows = _rows_before(source, original)
+        letter, path = _free(original, rows)
+        data = _with_revisions(laid_over(source.data, dict(state.changes), state.added), rows, letter, what, at)
+        text = case_text(source, data) + _minutes(source, state, letter, what, at)
+        found, lines = parsed(text, path.name)
+        result = whole(assess(compare(case_from_data(found, path, text, lines)), source.on))
+        if publish(path, text, render_html(result, units=state.units, made_at=at)):
+            return Frozen(letter.upper(), what, path.name, path.with_suffix(".html").name)
+        # Another meeting on the same case took the letter meanwhile.
+    raise ReportError("other meetings on this case take every name; end them, then freeze again")
 
 
 def whole(result: Comparison) -> Comparison:
@@ -75,32 +77,59 @@ def whole(result: Comparison) -> Comparison:
     return with_life(result) if has_life(result.case) else result
 
 
-def _with_revision(data: Mapping[str, Any], letter: str, what: str, at: datetime) -> dict[str, Any]:
-    """Return the data with one more line in the revision table of the report, as long as that has room."""
-    report = data.get("report", {})
-    rows = report.get("revisions", [])
-    if len(rows) >= MOST_ROWS:
-        return dict(data)
+def _free(original: Path, rows: Sequence[list[Any]]) -> tuple[str, Path]:
+    """Return the first letter after every revision so far whose two names are free, and the name of the case file."""
+    least = 1 + max((_place_of(str(row[0])) for row in rows), default=-1)
+    for place in range(least, MOST_REVISIONS):
+        letter = _letters(place)
+        path = original.with_name(f"{original.stem}-rev-{letter}.toml")
+        if not os.path.lexists(path) and not os.path.lexists(path.with_suffix(".html")):
+            return letter, path
+    raise ReportError(f"there are {MOST_REVISIONS} revisions of this case; begin a new one from the newest")
+
+
+def _with_revisions(
+    data: Mapping[str, Any], rows: Sequence[list[Any]], letter: str, what: str, at: datetime
+) -> dict[str, Any]:
+    """Return the data with every revision so far, and one more, in the revision table of the report."""
     row = [letter.upper(), f"{at:%Y-%m-%d}", what, "the meeting"]
-    return {**data, "report": {**report, "revisions": [*rows, row]}}
+    return {**data, "report": {**data.get("report", {}), "revisions": [*rows, row]}}
 
 
-def _free(original: Path, used: set[str]) -> tuple[str, Path]:
-    """Return the first letter that no revision has and whose files are free, and hold the name of the case file."""
+def _rows_before(source: Source, original: Path) -> list[list[Any]]:
+    """Return the revision table so far: the rows of the case, then those that its frozen revisions add."""
+    rows = [list(row.values()) if isinstance(row, Mapping) else list(row) for row in _table_of(source.data)]
+    known = {str(row[0]).lower() for row in rows}
     for place in range(MOST_REVISIONS):
-        turn, rest = divmod(place, 26)
-        letter = (string.ascii_lowercase[turn - 1] if turn else "") + string.ascii_lowercase[rest]
-        path = original.resolve().with_name(f"{original.stem}-rev-{letter}.toml")
-        if letter in used or path.with_suffix(".html").exists():
-            continue
-        try:
-            os.close(os.open(path, os.O_CREAT | os.O_EXCL | os.O_WRONLY, 0o666))
-        except FileExistsError:
-            continue
-        except OSError as error:
-            raise ReportError(f"{path.parent} cannot be written: {error.strerror}; nothing was frozen") from error
-        return letter, path
-    raise ReportError(f"there are {MOST_REVISIONS} revisions beside this case; move some away")
+        for row in _table_of_file(original.with_name(f"{original.stem}-rev-{_letters(place)}.toml")):
+            if row.rev.lower() not in known:
+                known.add(row.rev.lower())
+                rows.append([row.rev, f"{row.date:%Y-%m-%d}", row.what, row.by])
+    return rows
+
+
+def _table_of(data: Mapping[str, Any]) -> list[Any]:
+    return list(data.get("report", {}).get("revisions", []))
+
+
+def _table_of_file(path: Path) -> list[Revision]:
+    """Return the revision table of a frozen case; nothing of a file that is none, or no longer can be read."""
+    try:
+        data = parsed(text_of(str(path), path.name), path.name)[0] if path.exists() else {}
+        return [RevisionValue().read(row) for row in _table_of(data)]
+    except (CaseFileError, QuantityError, AttributeError, TypeError):
+        return []
+
+
+def _letters(place: int) -> str:
+    """Return the letters of a place in the row a, b, ... z, aa, ab, ..."""
+    turn, rest = divmod(place, 26)
+    return (string.ascii_lowercase[turn - 1] if turn else "") + string.ascii_lowercase[rest]
+
+
+def _place_of(letters: str) -> int:
+    """Return the place of letters in that row; -1 for a revision that is counted otherwise."""
+    return next((place for place in range(MOST_REVISIONS) if _letters(place) == letters.lower()), -1)
 
 
 def case_text(source: Source, data: Mapping[str, Any]) -> str:

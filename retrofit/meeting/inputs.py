@@ -6,14 +6,17 @@ import re
 from collections.abc import Mapping
 from dataclasses import dataclass
 from decimal import Decimal, InvalidOperation
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 from retrofit.case import Case, meaning, quantity
 from retrofit.case.model import FIELDS
 from retrofit.meeting.desk import Source
-from retrofit.meeting.session import Moment, RefusedError
+from retrofit.meeting.refused import RefusedError
 from retrofit.meeting.state import State
 from retrofit.units import MINUS, THOUSANDS_MARK, UnitSystem
+
+if TYPE_CHECKING:
+    from retrofit.meeting.session import Moment
 
 ALWAYS = ("plant", "duty", "compressor")  # tables that every case has, written or not
 # Groups of keys with short labels; a key is offered if the case file's model has it and the case its table.

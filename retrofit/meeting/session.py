@@ -9,23 +9,9 @@ from dataclasses import dataclass
 from retrofit.errors import CaseFileError, QuantityError
 from retrofit.meeting.desk import Desk, Outcome, Source
 from retrofit.meeting.freeze import Frozen
+from retrofit.meeting.meanwhile import Changed, Item, changed
+from retrofit.meeting.refused import Refused, RefusedError
 from retrofit.meeting.state import History, State
-
-
-class RefusedError(Exception):
-    """A change that is not possible; `field` names the input, `text` what was written there."""
-
-    def __init__(self, message: str, field: str = "", text: str = "") -> None:
-        super().__init__(message)
-        self.message, self.field, self.text = message, field, text
-
-
-@dataclass(frozen=True)
-class Refused:
-    """What was written in an input and why it was not taken."""
-
-    text: str
-    why: str
 
 
 @dataclass(frozen=True)
@@ -40,6 +26,7 @@ class Moment:
         refused: What was refused last, by input; "" for what belongs to none.
         frozen: The revisions written so far.
         places: Place of each refrigerant in the order in which it came into the meeting; its mark follows from it.
+        meanwhile: What others had changed when the last change came from a page that did not show it yet.
     """
 
     version: int
@@ -50,6 +37,7 @@ class Moment:
     refused: Mapping[str, Refused]
     frozen: tuple[Frozen, ...]
     places: Mapping[str, int]
+    meanwhile: str = ""
 
 
 Change = Callable[[State, State, Mapping[str, str]], tuple[State, str]]
@@ -64,6 +52,8 @@ class Session:
         self._lock = threading.RLock()
         self._history = History(State(units=units))
         self._refused: dict[str, Refused] = {}
+        self._meanwhile = ""
+        self._by: dict[Item, str] = {}  # the window that an item was last changed in
         self._frozen: tuple[Frozen, ...] = ()
         names = (source.case.plant.refrigerant, *source.case.compare.candidates)
         self._places = {name: place for place, name in enumerate(names)}
@@ -78,7 +68,7 @@ class Session:
         """Return the present state."""
         return self._history.now
 
-    def apply(self, change: Change, seen: int, has_inputs: bool = True) -> bool:
+    def apply(self, change: Change, seen: int, has_inputs: bool = True, window: str = "") -> bool:
         """Make a change on the newest state, whatever state the page it comes from showed.
 
         Args:
@@ -86,28 +76,35 @@ class Session:
                 and in words what changed.
             seen: Version of the page it comes from. [-]
             has_inputs: Whether it carries the inputs: what was refused in them is then said anew. [-]
-        Returns: Whether it was taken; if not, the next moment says why.
+            window: Which window it comes from; empty for a browser without script. [-]
+        Returns: Whether it was taken; if not, the next moment says why: among others because another window has
+            changed the same meanwhile. What others changed beside it is told by the next moment too.
         """
         with self._lock:
             base, left = self._history.at_version(seen), self._refused
             self._refused = {} if has_inputs else {key: item for key, item in left.items() if "." in key}
+            self._meanwhile = ""
             if base is None:
                 return self._refuse(RefusedError("the page was too old to tell what was changed on it; change it here"))
             # What was refused before may fit by now; if it still does not, it must not stop what is new.
-            taken = self._tried(change, base, {})
+            taken = self._tried(change, base, {}, window)
             if not taken and has_inputs and left:
                 told, self._refused = self._refused, {}
-                taken = self._tried(change, base, {key: item.text for key, item in left.items()})
+                taken = self._tried(change, base, {key: item.text for key, item in left.items()}, window)
                 self._refused = left if taken else told
             if not taken:
                 self._history.touch()
             return taken
 
-    def _tried(self, change: Change, base: State, passed_over: Mapping[str, str]) -> bool:
+    def _tried(self, change: Change, base: State, passed_over: Mapping[str, str], window: str) -> bool:
         """Take a change if it is possible; if not, keep why."""
         before = after = self._history.now
+        others = self._others(base, window)
         try:
             after, what = change(before, base, passed_over)
+            if clashes := self._clashes(others, before, after):
+                self._refused |= clashes
+                return False
             if after.physics != before.physics:
                 self.source.case_with(after.physics)
         except RefusedError as error:
@@ -118,10 +115,32 @@ class Session:
             self._refused[""] = Refused("", str(error))
         else:
             self._history.add(after, what)
+            self._note(before, after, others, window)
             for name in after.added:
                 self._places.setdefault(name, len(self._places))
             return True
         return False
+
+    def _others(self, base: State, window: str) -> dict[Item, Changed]:
+        """Return what other windows have changed since a page showed a state."""
+        found = {item.item: item for item in changed(base, self._history.now, self.source)}
+        return {key: item for key, item in found.items() if not window or self._by.get(key) != window}
+
+    def _clashes(self, others: Mapping[Item, Changed], before: State, after: State) -> dict[str, Refused]:
+        """Return what a change would overwrite that its page did not show, by input."""
+        found: dict[str, Refused] = {}
+        for asked in changed(before, after, self.source):
+            if known := others.get(asked.item):
+                said = f"{known} by another window meanwhile, so {asked.told} was not taken; if it shall be, ask again"
+                so_far = f"{found[known.field].why}; " if known.field in found else ""
+                found[known.field] = Refused(known.now, so_far + said)
+        return found
+
+    def _note(self, before: State, after: State, others: Mapping[Item, Changed], window: str) -> None:
+        """Keep who changed what, and tell what else had changed meanwhile."""
+        self._by |= {item.item: window for item in changed(before, after, self.source)}
+        if others and after != before:
+            self._meanwhile = "; ".join(str(item) for item in others.values())
 
     def _refuse(self, error: RefusedError) -> bool:
         self._refused = {error.field: Refused(error.text, error.message)}
@@ -137,17 +156,39 @@ class Session:
         with self._lock:
             self._refuse(RefusedError(message, "freeze"))
 
-    def undo(self) -> None:
-        """Go back one change."""
-        with self._lock:
-            self._refused = {}
-            self._history.move(-1)
+    def undo(self, seen: int | None = None, window: str = "") -> None:
+        """Go back one change; arguments as `apply`, None for a page that shows the newest."""
+        self._move(-1, seen, window)
 
-    def redo(self) -> None:
-        """Go forth one change that was undone."""
+    def redo(self, seen: int | None = None, window: str = "") -> None:
+        """Go forth one change that was undone; arguments as `undo`."""
+        self._move(+1, seen, window)
+
+    def _move(self, by: int, seen: int | None, window: str) -> None:
         with self._lock:
-            self._refused = {}
-            self._history.move(+1)
+            self._refused, self._meanwhile = {}, ""
+            base = self._history.now if seen is None else self._history.at_version(seen)
+            if base is None:
+                self._refuse(RefusedError("the page was too old to tell what it would undo; do it here"))
+                return
+            before, after, others = self._history.now, self._history.beside(by), self._others(base, window)
+            if clashes := self._clashes(others, before, after):
+                self._refused = clashes
+                self._history.touch()
+                return
+            self._history.move(by)
+            self._note(before, after, others, window)
+
+    def unseen(self, seen: int, window: str = "") -> str:
+        """Return what others have changed since a page, in words; empty if nothing, or if the page is not known.
+
+        Args:
+            seen: Version of the page. [-]
+            window: Which window it is in. [-]
+        """
+        with self._lock:
+            base = self._history.at_version(seen)
+            return "; ".join(str(item) for item in self._others(base, window).values()) if base else ""
 
     def freeze(self, made: Frozen) -> None:
         """Remember what has been frozen.
@@ -157,6 +198,7 @@ class Session:
         """
         with self._lock:
             self._frozen = (*self._frozen, made)
+            self._refused.pop("freeze", None)  # what hindered an earlier try
             self._history.touch()
 
     def moment(self) -> Moment:
@@ -164,7 +206,14 @@ class Session:
         for _ in range(3):
             with self._lock:
                 version, state, history = self._history.version, self._history.now, self._history
-                words = (history.undoable, history.redoable, dict(self._refused), self._frozen, dict(self._places))
+                words = (
+                    history.undoable,
+                    history.redoable,
+                    dict(self._refused),
+                    self._frozen,
+                    dict(self._places),
+                    self._meanwhile,
+                )
             found = Moment(version, state, self.desk.outcome(state), *words)
             if found.outcome.is_current or version == self.version:
                 break

@@ -105,6 +105,15 @@ class History:
         self._at = len(self._steps) - 1
         self._remember()
 
+    def beside(self, by: int) -> State:
+        """Return the state that a move would make the present one; the present if there is none.
+
+        Args:
+            by: How far. [-]
+        """
+        place = self._at + by
+        return self._steps[place].state if 0 <= place < len(self._steps) else self.now
+
     def move(self, by: int) -> None:
         """Go back (-1) or forth (+1), if there is anything there.
 

@@ -36,7 +36,7 @@ def write_whole(path: Path, content: str | bytes) -> None:
     try:
         with os.fdopen(handle, "wb") as file:
             file.write(content.encode("utf-8") if isinstance(content, str) else content)
-        os.chmod(name, 0o666 & ~_mask())
+        os.chmod(name, new_file_mode())
         os.replace(name, path)
     except OSError as error:
         raise ReportError(f"{path} cannot be written: {error.strerror}") from error
@@ -45,8 +45,8 @@ def write_whole(path: Path, content: str | bytes) -> None:
             os.unlink(name)
 
 
-def _mask() -> int:
-    """Return the process's file mode mask, so that the file gets the mode any new file would."""
+def new_file_mode() -> int:
+    """Return the mode that any new file gets, as the mask of the process says."""
     mask = os.umask(0)
     os.umask(mask)
-    return mask
+    return 0o666 & ~mask

@@ -1,170 +1,199 @@
-"""The last look at a finished page: all cautions are in it and in sight, and it loads nothing.
+"""The last look at a finished page: all cautions are in it and laid out in sight, and it loads nothing.
 
-What is refused: a page without the block of cautions as it was made, or with it inside an element that is
-hidden, inactive or closed; a style rule that hides and can reach the block; scripts and their attributes;
-anything that a browser would load. What cannot be refused: a style that puts something over the block, moves
-the page away, or prints it in the colour of the paper by a way not listed here. The elements of the block
-carry their own display, visibility and opacity as a second line of defence.
+The page is read as a browser reads it. The block of cautions has to be there once, as it was made, inside open
+elements of a short list; `sight.py` holds the styles against it. Elements that a report does not need are refused
+wherever they stand. What stays possible: so much before the block that nobody reads on, and words that talk it down.
 """
 
 from __future__ import annotations
 
 import re
-from html.parser import HTMLParser
+from collections.abc import Iterator
 from typing import TYPE_CHECKING
 
 from retrofit.errors import ReportError
+from retrofit.report.sight import Guarded, check_styles, path_of
 
 if TYPE_CHECKING:
-    from retrofit.report.page import Page
-    from retrofit.report.site_copy import SiteCopy
+    from selectolax.lexbor import LexborNode
 
 # What a browser may do with a report: show it, with the styles and pictures that are in it.
-BLOCK_ID = "cautions"
 POLICY = "default-src 'none'; style-src 'unsafe-inline'; img-src data:"
-VOID = frozenset("area base br col embed hr img input link meta param source track wbr".split())
-UNSEEN = frozenset("script style template noscript textarea title iframe object select datalist svg head".split())
+BLOCK_ID = "cautions"
+CARRIED = {"id": "retrofit-carried"}  # the one template element of a page, which no browser shows
+STANDARDS = re.compile(r"\s*(<!--.*?-->\s*)*<!doctype html>", re.IGNORECASE | re.DOTALL)
+AROUND = frozenset("html body main article section div header footer".split())
+AROUND_ATTRIBUTES = frozenset("id class lang dir style title role".split())
+ELEMENTS = frozenset(
+    "html head meta title style body header footer main nav section article aside div address hgroup h1 h2 h3 h4 h5 h6 "
+    "p blockquote pre hr br wbr ul ol li dl dt dd figure figcaption table caption colgroup col thead tbody tfoot tr th "
+    "td a abbr b bdi bdo cite code data del dfn em i ins kbd mark q rp rt ruby s samp small span strong sub sup time u "
+    "var details summary img template".split()
+)
+DRAWN = frozenset(
+    "svg g defs symbol use path rect circle ellipse line polyline polygon text tspan title desc metadata style a "
+    "clippath lineargradient radialgradient stop pattern marker mask".split()
+)
 LOADING_ATTRIBUTES = frozenset("src srcset srcdoc data poster background action formaction xlink:href".split())
-HIDING = re.compile(
-    r"display:none|visibility:(hidden|collapse)|opacity:0*\.?0*(;|!|$)|font-size:0|content-visibility:hidden"
-    r"|(max-)?(height|width):0(px|em|rem|%)?(;|!|$)|clip-path|clip:|position:(absolute|fixed)|text-indent:-"
-    r"|color:transparent|transform:|zoom:0|filter:"
-)
-FETCHING = re.compile(r"""@import|image-set\(|url\(\s*(?!['"]?\s*(data:|#))""", re.IGNORECASE)
-# Selectors that reach the block: by its own names, by the elements it is made of or stands in, or all elements.
-REACHING = re.compile(
-    r"caution|deference|\*|(^|[\s>+~(,])(html|body|main|section|article|div|header|h2|h3|h4|p|ul|ol|li|span|strong)"
-    r"($|[\s>+~:.#\[,)])|:root|:is|:where|:has|:not|nth-|child|of-type|\[|&"
-)
+MOST_AROUND = 16  # elements one in the other
+PUT_BACK = "put {{ cautions }} into the open part of the page"
 
 
-def check_page(html: str, page: Page | SiteCopy, cautions: str) -> None:
+def check_page(html: str, cautions: str) -> None:
     """Refuse a page that has lost or hidden its cautions, or that would load or run something.
 
     Args:
         html: The finished page. [-]
-        page: What it was made from.
         cautions: The block of cautions as it was made. [-]
-    Raises: ReportError saying what is missing or refused.
+    Raises: ReportError saying what is missing or refused, and where.
     """
-    if cautions not in html:
-        raise ReportError(
-            "the template leaves out or changes the cautions; put {{ cautions }} back where they shall stand"
-        )
-    reader = _PageReader()
-    reader.feed(html)
-    reader.close()
-    if reader.refused:
-        raise ReportError(f"the template is refused: {reader.refused[0]}; a report runs and loads nothing")
-    if not reader.has_policy:
-        raise ReportError(
-            "the template leaves out the policy that keeps a report from loading things; take it from report.html"
-        )
-    _check_words(reader.seen_text(), page)
-    _check_styles(reader.styles, reader.around)
+    try:
+        _check(html, cautions)
+    except RecursionError:
+        raise ReportError("the template is refused: a style is nested too deep, which can hide the cautions") from None
 
 
-def _check_words(seen: str, page: Page | SiteCopy) -> None:
-    wanted = [page.deference]
-    wanted += [text for g in page.cautions for item in g.items for text in (item.caution.title, item.caution.text)]
-    for text in wanted:
-        if _plain(text) not in seen:
+def _check(html: str, cautions: str) -> None:
+    from selectolax.lexbor import LexborHTMLParser
+
+    tree = LexborHTMLParser(html)
+    if not STANDARDS.match(html):
+        raise ReportError(
+            "the template is refused: the page has to begin with <!DOCTYPE html>; take it from report.html"
+        )
+    nodes = list(tree.root.traverse(include_text=False)) if tree.root else []
+    _check_nothing_runs(nodes)
+    block = _block(nodes, cautions)
+    around = _around(block)
+    _check_elements(nodes)
+    _check_head(nodes)
+    inside = tuple(block.traverse(include_text=False))
+    own = {node.mem_id for node in inside}
+    styles = [_style_text(node) for node in nodes if node.tag == "style"]
+    attributes = [
+        text for node in nodes if node.mem_id not in own and (text := node.attributes.get("style") or "").strip()
+    ]
+    _prune(block)
+    check_styles(styles, attributes, Guarded(tree, around, inside))
+
+
+def _block(nodes: list[LexborNode], cautions: str) -> LexborNode:
+    """Return the one block of cautions of a page, the same as it was made."""
+    from selectolax.lexbor import LexborHTMLParser
+
+    found = [node for node in nodes if node.id == BLOCK_ID]
+    if not found:
+        raise ReportError(f"the template leaves out the cautions or hides them in what no browser shows; {PUT_BACK}")
+    made = LexborHTMLParser(f"<!DOCTYPE html><body>{cautions}").css_first(f"#{BLOCK_ID}")
+    if len(found) > 1 or made is None or found[0].html != made.html:
+        raise ReportError(f"the template changes the cautions or shows a part of them twice; {PUT_BACK}")
+    return found[0]
+
+
+def _around(block: LexborNode) -> tuple[LexborNode, ...]:
+    """Return what the block stands in, outermost first, all of it open."""
+    found: list[LexborNode] = []
+    at = block.parent
+    while at is not None and at.is_element_node:
+        found.append(at)
+        at = at.parent
+    if len(found) > MOST_AROUND:
+        raise ReportError(f"the template hides the cautions in {len(found)} elements, one in the other; {PUT_BACK}")
+    for node in found:
+        if node.tag not in AROUND:
+            raise ReportError(f"the template hides the cautions in <{node.tag}> ({path_of(node)}); {PUT_BACK}")
+        for name in node.attributes:
+            if name not in AROUND_ATTRIBUTES and not name.startswith(("data-", "aria-label", "aria-describedby")):
+                raise ReportError(
+                    f'the template gives {path_of(node)} the attribute "{name}", which can hide the cautions; '
+                    f"leave it out, or {PUT_BACK}"
+                )
+    return tuple(reversed(found))
+
+
+def _check_elements(nodes: list[LexborNode]) -> None:
+    drawn: set[int] = set()
+    for node in nodes:
+        parent = node.parent
+        tag = (node.tag or "").casefold()
+        if tag == "svg" or (parent is not None and parent.mem_id in drawn):
+            drawn.add(node.mem_id)
+        allowed = DRAWN if node.mem_id in drawn else ELEMENTS
+        if tag not in allowed or (tag == "template" and node.attributes != CARRIED):
             raise ReportError(
-                f'the template hides a caution: "{text[:60]}…" is not among the visible text; put {{{{ cautions }}}} '
-                "into the open part of the page"
+                f"the template is refused: <{node.tag}> ({path_of(node)}) is not among the elements of a report, "
+                "because browsers can hide the cautions with it; leave it out"
             )
 
 
-def _check_styles(styles: list[str], around: set[str]) -> None:
-    """Refuse a rule that hides and can reach the block, by itself or by an element around it."""
-    reaching = re.compile("|".join([REACHING.pattern, *(rf"(?<![\w-]){re.escape(name)}(?![\w-])" for name in around)]))
-    for style in styles:
-        text = _unescaped(re.sub(r"/\*.*?\*/", "", style, flags=re.DOTALL))
-        if found := FETCHING.search(text):
-            raise ReportError(f'the template is refused: its style has "{found[0]}", which would load something')
-        for selector, body in re.findall(r"([^{}]*)\{([^{}]*)\}", text):
-            plain = re.sub(r"\s+", "", body).casefold()
-            if HIDING.search(plain) and reaching.search(selector.strip().casefold()):
-                raise ReportError(
-                    f'the template is refused: its style "{selector.strip()[:60]}" can hide the cautions; '
-                    "give what shall be hidden a class of its own"
-                )
+def _check_head(nodes: list[LexborNode]) -> None:
+    metas = [node for node in nodes if node.tag == "meta"]
+    commands = [node for node in metas if "http-equiv" in node.attributes]
+    kept = [
+        (
+            node.attributes.get("http-equiv") or "",
+            node.attributes.get("content"),
+            node.parent.tag if node.parent else "",
+        )
+        for node in commands
+    ]
+    if kept != [("Content-Security-Policy", POLICY, "head")]:
+        raise ReportError(
+            "the template leaves out or changes the policy that keeps a report from loading things; take the one meta "
+            "element with http-equiv from report.html"
+        )
+    letters = [(node.attributes.get("charset") or "").casefold() for node in metas if "charset" in node.attributes]
+    schemes = [node.attributes.get("content") or "" for node in metas if node.attributes.get("name") == "color-scheme"]
+    if any("light" not in scheme for scheme in schemes):
+        raise ReportError("the template is refused: a page of dark colours alone can hide the cautions on paper")
+    if letters != ["utf-8"]:
+        raise ReportError(
+            'the template is refused: the page needs <meta charset="utf-8"> once; take it from report.html'
+        )
 
 
-def _unescaped(style: str) -> str:
-    """Return a style with its \\hex escapes of letters undone, so that a rule cannot be written past the check."""
-    return re.sub(r"\\([0-9a-fA-F]{1,6})\s?", lambda match: _letter(int(match[1], 16)), style)
+def _style_text(node: LexborNode) -> str:
+    if any(child.is_element_node for child in node.iter(include_text=True)):
+        raise ReportError(
+            f"the template is refused: {path_of(node)} holds elements, which can hide the cautions; correct it"
+        )
+    return node.text(deep=True)
 
 
-def _letter(code: int) -> str:
-    return chr(code) if code < 128 and chr(code).isalnum() else ""
+def _prune(block: LexborNode) -> None:
+    """Empty what stands beside the block and what holds it: no selector that is held against them asks for it."""
+    at: LexborNode | None = block
+    while at is not None and at.is_element_node:
+        other = at.parent.child if at.parent is not None else None
+        while other is not None:
+            following = other.next
+            if other.is_element_node and other.mem_id != at.mem_id:
+                for child in list(other.iter(include_text=True)):
+                    child.decompose(recursive=True)
+            other = following
+        at = at.parent
 
 
-def _plain(text: str) -> str:
-    return re.sub(r"\s+", " ", text).strip()
+def _check_nothing_runs(nodes: list[LexborNode]) -> None:
+    """Refuse what would run a script, load something or leave the page."""
+    for node in nodes:
+        if why := next(_running(node.tag or "", node.attributes), ""):
+            raise ReportError(f"the template is refused: {why} ({path_of(node)}); a report runs and loads nothing")
 
 
-class _PageReader(HTMLParser):
-    """Collects the text that stands in the open, the styles, and what is not allowed in a report."""
-
-    def __init__(self) -> None:
-        super().__init__(convert_charrefs=True)
-        self.open: list[tuple[str, bool, set[str]]] = []  # tag, whether it hides what is in it, tag, id and classes
-        self.around: set[str] = set()  # tags, ids and classes of what the block stands in
-        self.texts: list[str] = []
-        self.styles: list[str] = []
-        self.refused: list[str] = []
-        self.has_policy = False
-
-    def seen_text(self) -> str:
-        return _plain(" ".join(self.texts))
-
-    def handle_starttag(self, tag: str, attrs: list[tuple[str, str | None]]) -> None:
-        named = {name: value or "" for name, value in attrs}
-        self._refuse(tag, named)
-        if named.get("id") == BLOCK_ID:
-            self.around.update(*(names for _, _, names in self.open))
-        if tag not in VOID:
-            names = {tag, named.get("id", ""), *named.get("class", "").split()} - {""}
-            self.open.append((tag, self._hides(tag, named), {name.casefold() for name in names}))
-
-    def handle_startendtag(self, tag: str, attrs: list[tuple[str, str | None]]) -> None:
-        self._refuse(tag, {name: value or "" for name, value in attrs})
-
-    def handle_endtag(self, tag: str) -> None:
-        names = [name for name, _, _ in self.open]
-        if tag in names:
-            del self.open[len(names) - 1 - names[::-1].index(tag) :]
-
-    def handle_data(self, data: str) -> None:
-        if self.open and self.open[-1][0] == "style":
-            self.styles.append(data)
-        elif not any(hides for _, hides, _ in self.open):
-            self.texts.append(data)
-
-    def _hides(self, tag: str, named: dict[str, str]) -> bool:
-        style = re.sub(r"\s+", "", named.get("style", "")).casefold()
-        closed = tag == "dialog" or (tag == "details" and "open" not in named)
-        hidden = "hidden" in named or "popover" in named or named.get("aria-hidden") == "true"
-        return tag in UNSEEN or closed or hidden or bool(HIDING.search(style))
-
-    def _refuse(self, tag: str, named: dict[str, str]) -> None:
-        for name, value in named.items():
-            if name.startswith("on"):
-                self.refused.append(f"<{tag} {name}=…> would run a script")
-            target = value.strip().casefold()
-            is_picture = (tag, name) == ("img", "src") and target.startswith("data:image/")
-            if name in LOADING_ATTRIBUTES and not is_picture:
-                self.refused.append(f"<{tag} {name}=…> would load something")
-            if name == "href" and tag not in ("a", "area") and not target.startswith("#"):
-                self.refused.append(f"<{tag} href=…> would load something")
-            if name == "href" and target.startswith(("javascript:", "data:", "vbscript:")):
-                self.refused.append(f"<{tag} href=…> would run a script")
-        if tag == "script":
-            self.refused.append("<script> would run")
-        if FETCHING.search(named.get("style", "")):
-            self.refused.append(f"<{tag} style=…> would load something")
-        if tag == "meta" and named.get("http-equiv") == "Content-Security-Policy":
-            self.has_policy = named.get("content") == POLICY
-        if tag == "meta" and named.get("http-equiv", "").casefold() == "refresh":
-            self.refused.append("<meta http-equiv=refresh> would leave the page")
+def _running(tag: str, attributes: dict[str, str | None]) -> Iterator[str]:
+    if tag == "script":
+        yield "<script> would run"
+    for name, given in attributes.items():
+        target = "".join((given or "").split()).casefold()
+        is_picture = (tag, name) == ("img", "src") and target.startswith("data:image/")
+        if name.startswith("on"):
+            yield f"<{tag} {name}=…> would run a script"
+        if name in LOADING_ATTRIBUTES and not is_picture and not (name == "xlink:href" and target.startswith("#")):
+            yield f"<{tag} {name}=…> would load something"
+        if name == "href" and tag not in ("a", "area") and not target.startswith("#"):
+            yield f"<{tag} href=…> would load something"
+        if name == "href" and target.startswith(("javascript:", "data:", "vbscript:")):
+            yield f"<{tag} href=…> would run a script"
+    if tag == "meta" and (attributes.get("http-equiv") or "").strip().casefold() == "refresh":
+        yield "<meta http-equiv=refresh> would leave the page"

@@ -8,6 +8,10 @@ from pathlib import Path
 from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
+    from markupsafe import Markup
+
+    from retrofit.report.page import Page
+    from retrofit.report.site_copy import SiteCopy
     from retrofit.study import Comparison
 
 
@@ -27,15 +31,16 @@ def render_html(
     # The command line imports this room for its other parts too: what is slow waits until it is needed.
     from retrofit.report.carried import with_block
     from retrofit.report.guard import check_page
+    from retrofit.report.mark import marked_page
     from retrofit.report.page import build_page
-    from retrofit.report.templates import render_cautions, render_page
+    from retrofit.report.templates import render_cautions
     from retrofit.units import UNIT_SYSTEMS, told
 
     page = build_page(comparison, UNIT_SYSTEMS[units], made_at)
     cautions = render_cautions(page)
-    html = told(render_page(page, cautions, template_folder), UNIT_SYSTEMS[units])
-    html = with_block(html, comparison, units, made_at)
-    check_page(html, page, cautions)
+    html = told(_filled(page, cautions, template_folder), UNIT_SYSTEMS[units])
+    html = with_block(marked_page(html, comparison.case), comparison, units, made_at)
+    check_page(html, cautions)
     return html
 
 
@@ -64,16 +69,24 @@ def render_site_copy(
         computed or a new plant, or as `render_html`.
     """
     from retrofit.report.guard import check_page
+    from retrofit.report.mark import marked_page
     from retrofit.report.site_copy import build_site_copy, candidate_named
-    from retrofit.report.templates import render_cautions, render_page
+    from retrofit.report.templates import render_cautions
     from retrofit.units import UNIT_SYSTEMS, told
 
     entry = candidate_named(comparison, refrigerant)
     page = build_site_copy(comparison, entry, UNIT_SYSTEMS[units], made_at, T_inlet_today_K, despite)
     cautions = render_cautions(page)
-    html = told(render_page(page, cautions, template_folder), UNIT_SYSTEMS[units])
-    check_page(html, page, cautions)
+    html = marked_page(told(_filled(page, cautions, template_folder), UNIT_SYSTEMS[units]), comparison.case)
+    check_page(html, cautions)
     return html
+
+
+def _filled(page: Page | SiteCopy, cautions: Markup, template_folder: Path | None) -> str:
+    from retrofit.report.apart import render_apart
+    from retrofit.report.templates import render_page
+
+    return render_page(page, cautions) if template_folder is None else render_apart(page, cautions, template_folder)
 
 
 def write_report(path: str | os.PathLike[str], html: str) -> None:

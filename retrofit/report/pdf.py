@@ -9,6 +9,7 @@ from pathlib import PurePath
 from typing import TYPE_CHECKING, Any
 
 from retrofit.errors import MissingPartError
+from retrofit.report.mark import marked_pdf
 
 if TYPE_CHECKING:
     from retrofit.study import Comparison
@@ -47,7 +48,7 @@ def render_pdf(html: str, comparison: Comparison) -> bytes:
     attached = [setter.Attachment(string=case.text, name=name, description=CASE_KEPT)] if case.text else []
     page = setter.HTML(string=html, url_fetcher=fetcher)
     breaks = setter.CSS(string=BREAKS, url_fetcher=fetcher)
-    return bytes(page.write_pdf(stylesheets=[breaks], pdf_tags=True, attachments=attached))
+    return marked_pdf(bytes(page.write_pdf(stylesheets=[breaks], pdf_tags=True, attachments=attached)), case)
 
 
 def _setter() -> Any:

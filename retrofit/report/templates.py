@@ -6,7 +6,7 @@ The block of cautions is always filled from the built-in template, whatever the 
 from __future__ import annotations
 
 import traceback
-from collections.abc import Mapping
+from collections.abc import Iterator, Mapping
 from functools import cache
 from pathlib import Path
 from typing import TYPE_CHECKING, Any, Protocol
@@ -54,11 +54,17 @@ class Cautioned(Protocol):
         """Return the numbers of the sections, by id."""
 
 
-def render_cautions(page: Cautioned) -> Markup:
-    """Return the block of cautions, from the built-in template alone."""
+def render_cautions(page: Cautioned, is_topmost: bool = True) -> Markup:
+    """Return the block of cautions, from the built-in template alone.
+
+    Args:
+        page: What it is made from.
+        is_topmost: Whether it lies above all else, as it has to where the reader's own templates may put something
+            over it; in a meeting it scrolls under what stays in sight. [-]
+    """
     from markupsafe import Markup
 
-    return Markup(_environment(None).get_template(CAUTIONS).render(page=page))
+    return Markup(_environment(None).get_template(CAUTIONS).render(page=page, is_topmost=is_topmost))
 
 
 def filled(name: str, **values: object) -> str:
@@ -86,42 +92,37 @@ def _own_environment() -> Any:
     )
 
 
-def render_page(page: Page | SiteCopy, cautions: Markup, template_folder: Path | None) -> str:
-    """Return the page.
+def render_page(page: Page | SiteCopy, cautions: Markup) -> str:
+    """Return the page from the built-in templates.
 
     Args:
         page: What it shows.
         cautions: The finished block of cautions, which a page puts in place as `{{ cautions }}`.
-        template_folder: The reader's own templates, None for none. [-]
-    Raises: ReportError naming file and line if a template of the reader fails.
     """
-    if template_folder is None:
-        return _filled(None, page, cautions)
-    if not template_folder.is_dir():
-        name = shown(str(template_folder), 300)
-        raise ReportError(f'there is no template folder "{name}"; name a folder with templates such as {PAGE}')
-    return _with_own_templates(page, cautions, template_folder)
+    return str(_environment(None).get_template(page.template).render(page=page, cautions=cautions))
 
 
-def _with_own_templates(page: Page | SiteCopy, cautions: Markup, folder: Path) -> str:
-    from jinja2 import TemplateError
+def with_own(page: Page | SiteCopy, cautions: Markup, folder: Path) -> Iterator[str]:
+    """Yield the page piece by piece, with the reader's own templates laid over the built-in ones.
 
-    try:
-        return _filled(folder, page, cautions)
-    except (
-        TemplateError,
-        TypeError,
-        ValueError,
-        LookupError,
-        AttributeError,
-        ArithmeticError,
-        RecursionError,
-    ) as error:
-        raise ReportError(f"{_where(error, folder)}: {shown(str(error), 300)}; correct the template") from error
+    Args:
+        page: What it shows.
+        cautions: The finished block of cautions. [-]
+        folder: The reader's own templates. [-]
+    Raises: whatever a template can raise; `fault` has the words.
+    """
+    yield from _environment(folder).get_template(page.template).generate(page=page, cautions=cautions)
 
 
-def _filled(folder: Path | None, page: Page | SiteCopy, cautions: Markup) -> str:
-    return str(_environment(folder).get_template(page.template).render(page=page, cautions=cautions))
+def fault(error: BaseException, folder: Path, words: str = "") -> str:
+    """Return what is wrong with a template of the reader, with file and line.
+
+    Args:
+        error: What it raised.
+        folder: The reader's own templates. [-]
+        words: What to say in place of the error's own words. [-]
+    """
+    return f"{_where(error, folder)}: {words or shown(str(error), 300)}; correct the template"
 
 
 @cache

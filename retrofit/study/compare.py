@@ -101,15 +101,17 @@ def _candidate(
         at_rest=at_rest(case, None),
         is_new_plant=is_new_plant(case, refrigerant),
     )
+    if today is None or parts is None:
+        name = existing.refrigerant.designation
+        entry = replace(entry, reason=f"{name}, the existing refrigerant it would be matched to, is not computed")
     try:
         behaviour = fluid(refrigerant.designation, on_build)
         entry = replace(entry, at_rest=at_rest(case, behaviour))
         if today is None or parts is None:
-            name = existing.refrigerant.designation
-            return replace(entry, reason=f"{name}, the existing refrigerant it would be matched to, is not computed")
+            return entry
         return _against(_solved(today, entry, behaviour), existing, parts, behaviour)
     except RetrofitError as error:
-        return replace(entry, reason=error.message)
+        return replace(entry, reason=entry.reason or error.message)
 
 
 def _solved(today: Today, entry: Entry, behaviour: Fluid) -> Entry:

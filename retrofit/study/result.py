@@ -358,7 +358,7 @@ class Entry:
     @property
     def is_computed(self) -> bool:
         """Return whether there are numbers of it. [-]"""
-        return self.duty is not None
+        return self.status == "ok"
 
     @property
     def stops(self) -> tuple[Finding, ...]:

@@ -288,7 +288,13 @@ def test_every_table_of_the_file_is_known():
     ("plant", "tables", "key", "part"),
     [
         ("low_side_limit = '19 bar'", "", "plant.low_side_limit", "absolute or gauge"),
-        ("relief_setting = '400 bar g'", "", "plant.relief_setting", "1 bar a to 300 bar a"),
+        ("relief_setting = '400 bar g'", "", "plant.relief_setting", "0.5 bar g to 200 bar g"),
+        ("relief_setting = '0.4 bar g'", "", "plant.relief_setting", "0.5 bar g to 200 bar g"),
+        ("high_side_limit = '1.0 bar a'", "", "plant.high_side_limit", "0.5 bar g to 200 bar g"),
+        ("high_side_limit = '0 bar g'", "", "plant.high_side_limit", "0.5 bar g to 200 bar g"),
+        ("low_side_limit = '1.1 bar a'", "", "plant.low_side_limit", "0.5 bar g to 200 bar g"),
+        ("", "[controls]\nhigh_pressure_cut_out = '0.9 bar a'", "controls.high_pressure_cut_out", "0.5 bar g to"),
+        ("", "[controls]\nhigh_pressure_cut_out = '-0.5 bar g'", "controls.high_pressure_cut_out", "0.5 bar g to"),
         ("highest_ambient = '81 degC'", "", "plant.highest_ambient", "-20 degC to 80 degC"),
         (
             "metals = 'copper'",
@@ -438,3 +444,13 @@ def test_a_text_where_the_exchanger_belongs_is_sent_to_the_plant(complaints):
 
     assert [(line, key) for line, key, _ in found] == [(1, "evaporator")]
     assert "or move this line to [plant]" in found[0][2]
+
+
+def test_a_limit_counts_from_the_air_at_the_plant(case, complaints):
+    """1.3 bar a is 0.6 bar above the air at 3000 m, 0.70 bar by ICAO Doc 7488, and 0.29 bar above that at the sea."""
+    low = "low_side_limit = '1.3 bar a'\n"
+
+    assert case(with_(plant=low + "altitude = '3000 m'\n")).plant.low_side_limit_Pa == pytest.approx(1.3e5)
+    assert [key for _, key, _ in complaints(with_(plant=low))] == ["plant.low_side_limit"]
+    # 0.5 bar g itself is allowed, however it is written: 1.013 25 + 0.5 bar.
+    assert case(with_(plant="low_side_limit = '1.51325 bar a'\n")).plant.low_side_limit_Pa == pytest.approx(151_325.0)

@@ -6,7 +6,7 @@ from dataclasses import replace
 import pytest
 
 from retrofit.checks import answer, assess
-from retrofit.study import compare
+from retrofit.study import Verdict, compare
 from retrofit.study.bands import model_band
 from retrofit.units import IP, SI
 
@@ -116,28 +116,29 @@ def test_bands_in_the_words_are_the_bands_of_the_file(store):
     assert f"±{band['T_discharge'].value:.0f}\N{NO-BREAK SPACE}K" in text
 
 
-def test_the_headline_puts_each_candidate_under_its_verdict(store):
-    """Each candidate's name stands before the words of its own verdict, one not computed before those."""
+def test_the_headline_puts_each_option_under_its_verdict(store):
+    """Each option, keeping among them, stands before the words of its own verdict."""
     parts = answer(store, SI).headline.split(". ")[0].split("; ")
     found = {name: part for part in parts for name in re.findall(r"R\d+\w*", part)}
+    words = {
+        Verdict.NOT_SUITABLE: "not suitable",
+        Verdict.OPEN: "open: decisive facts are missing",
+        Verdict.MODIFICATIONS: "suitable with modifications",
+        Verdict.SUITABLE: "suitable",
+    }
 
-    assert set(found) == {entry.refrigerant.designation for entry in store.candidates}
-    for entry in store.candidates:
-        words = {
-            "does not suit": "not suit this plant",
-            "cannot be said": "cannot be judged",
-            "suits with work": "with work",
-            "suits": "suit",
-        }[entry.verdict]
-        assert ("not computed" if entry.status != "ok" else words) in found[entry.refrigerant.designation]
+    assert set(found) == {entry.refrigerant.designation for entry in store.entries}
+    for entry in store.entries:
+        assert words[entry.verdict] in found[entry.refrigerant.designation]
+    assert "keeping R404A" in found["R404A"].replace("Keeping", "keeping")
 
 
 def test_a_replacement_and_a_reason_are_told(store):
     """The class of a replacement and the reason of a missing row are sentences of the answer."""
     remarks = " ".join(answer(store, SI).remarks)
 
-    assert "R454C (A2L) is of a less mild safety class" in remarks
-    assert "R744 is not computed: condensing at" in remarks
+    assert "R454C (A2L) has a more hazardous safety class" in remarks
+    assert "R744 is not computed, so it is not priced, ranked or recommended: condensing at" in remarks
 
 
 def test_the_answer_speaks_the_readers_units(store):
@@ -157,13 +158,14 @@ def test_without_todays_refrigerant_the_answer_says_that_nothing_is_compared(cas
     found = answer(assess(compare(case_of("R744", ["R448A"]))), SI)
 
     assert "Nothing can be compared" in found.headline
-    assert found.matters == ()
-    assert "critical temperature of R744" in found.sentences[0]
+    assert [item.about for item in found.matters] == ["Decisive facts missing"]
+    assert "critical temperature of R744" in found.remarks[0]
 
 
 def test_without_any_candidate_computed_the_answer_gives_the_reasons(case_of):
     """No empty matters where no candidate could be solved."""
     found = answer(assess(compare(case_of("R404A", ["R744"]))), SI)
 
-    assert found.matters == ()
-    assert "R744 is not computed" in found.headline
+    assert [item.about for item in found.matters] == ["Decisive facts missing"]
+    assert "R744 is not suitable" in found.headline
+    assert "No conversion passes the checks. What is left: keeping R404A or a new plant" in found.headline

@@ -5,47 +5,50 @@ from itertools import combinations
 
 import pytest
 
-from retrofit.checks import LEVELS, VERDICTS, assess, verdict
-from retrofit.study import Finding, compare
+from retrofit.checks import LEVELS, assess, verdict
+from retrofit.study import Finding, Level, Verdict, compare
 
 PRECEDENCE = [
-    ("stop", "does not suit"),
-    ("unknown", "cannot be said"),
-    ("work", "suits with work"),
-    ("note", "suits"),
+    (Level.STOP, False, "not suitable"),
+    (Level.UNKNOWN, True, "open"),
+    (Level.UNKNOWN, False, "suitable with modifications"),
+    (Level.WORK, False, "suitable with modifications"),
+    (Level.NOTE, False, "suitable"),
 ]
 
 
-def found(level):
+def found(level, decisive=False):
     """Return a finding of a level."""
-    return Finding("code", level, "Title", "fact.", "", "source")
+    return Finding("code", level, "Title", "fact.", "", "source", decisive=decisive)
 
 
-def test_no_finding_suits():
-    """Nothing found on complete data suits."""
-    assert verdict([]) == "suits"
+def test_no_finding_is_suitable():
+    """Nothing found on complete data is suitable."""
+    assert verdict([]) == Verdict.SUITABLE == "suitable"
 
 
-@pytest.mark.parametrize(("level", "word"), PRECEDENCE)
-def test_a_level_alone_gives_its_verdict(level, word):
+@pytest.mark.parametrize(("level", "decisive", "word"), PRECEDENCE)
+def test_a_level_alone_gives_its_verdict(level, decisive, word):
     """Each level by itself, once or twice."""
-    assert verdict([found(level)]) == verdict([found(level), found(level)]) == word
+    one = found(level, decisive)
+
+    assert verdict([one]) == verdict([one, one]) == word
 
 
 @pytest.mark.parametrize("pair", list(combinations(PRECEDENCE, 2)))
 @pytest.mark.parametrize("turned", [False, True])
 def test_the_worse_level_decides_in_either_order(pair, turned):
-    """A stop goes before a missing datum, that before work, that before a note."""
-    (worse, word), (milder, _) = pair
-    findings = [found(worse), found(milder)]
+    """A stop goes before a decisive fact that is missing, that before a modification, that before a note."""
+    (worse, is_decisive, word), (milder, is_milder_decisive, _) = pair
+    findings = [found(worse, is_decisive), found(milder, is_milder_decisive)]
 
     assert verdict(findings[::-1] if turned else findings) == word
 
 
-def test_levels_and_verdicts_are_one_order():
-    """The list of levels is the order of the verdicts."""
-    assert tuple(level for level, _ in PRECEDENCE) == LEVELS
-    assert dict(PRECEDENCE[:3]) == dict(VERDICTS)
+def test_levels_are_in_the_order_of_the_verdicts():
+    """The list of levels is the order of the verdicts, and only two of these are in favour."""
+    assert tuple(dict.fromkeys(level for level, _, _ in PRECEDENCE)) == LEVELS
+    assert [word for word in Verdict if word.is_positive] == ["suitable with modifications", "suitable"]
 
 
 def test_assessing_changes_no_number_and_sorts_the_worst_first(case_of):
@@ -54,7 +57,8 @@ def test_assessing_changes_no_number_and_sorts_the_worst_first(case_of):
     after = assess(before)
 
     assert [
-        replace(entry, findings=(), hardware=(), room=None, law=None, verdict="") for entry in after.entries
+        replace(entry, findings=(), hardware=(), room=None, law=None, verdict=Verdict.NOT_JUDGED)
+        for entry in after.entries
     ] == list(before.entries)
     for entry in after.entries:
         ranks = [LEVELS.index(finding.level) for finding in entry.findings]
@@ -65,13 +69,15 @@ def test_assessing_changes_no_number_and_sorts_the_worst_first(case_of):
     assert [entry.hardware for entry in again.entries] == [entry.hardware for entry in after.entries]
 
 
-def test_a_refrigerant_that_is_not_computed_cannot_be_judged(case_of):
-    """The reason is a finding of its own, and the verdict is not a good one."""
+def test_a_refrigerant_that_is_not_computed_has_its_reason_and_is_never_in_favour(case_of):
+    """The reason is a decisive finding of its own, and the verdict is not a good one."""
     entry = assess(compare(case_of("R404A", ["R744"]))).candidates[0]
+    reason = next(finding for finding in entry.findings if finding.code == "not-computed")
 
-    assert entry.findings[0].code == "not-computed"
-    assert entry.reason in entry.findings[0].fact
-    assert entry.verdict == "cannot be said"
+    assert entry.reason in reason.fact
+    assert reason.decisive
+    assert not entry.verdict.is_positive
+    assert not entry.can_be_chosen
 
 
 def test_a_stop_holds_even_where_nothing_could_be_computed(case_of):
@@ -80,16 +86,4 @@ def test_a_stop_holds_even_where_nothing_could_be_computed(case_of):
     entry = assess(compare(case_of("R404A", ["R170"], duty=duty))).candidates[0]
 
     assert entry.status == "not computed"
-    assert entry.verdict == "does not suit"
-
-
-@pytest.mark.parametrize("missing", ["oil", "high_side_limit", "evaporator"])
-def test_a_datum_left_out_of_the_case_is_never_good(case_of, missing):
-    """With all three given the candidate suits with work; without any one of them it cannot be said."""
-    complete = {"oil": "polyol ester", "high_side_limit": "28 bar g", "evaporator": "direct expansion"}
-    short = {key: value for key, value in complete.items() if key != missing}
-    verdicts = [
-        assess(compare(case_of("R404A", ["R452A"], plant=plant))).candidates[0].verdict for plant in (complete, short)
-    ]
-
-    assert verdicts == ["suits with work", "cannot be said"]
+    assert entry.verdict == Verdict.NOT_SUITABLE

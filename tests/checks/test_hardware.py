@@ -10,7 +10,7 @@ from retrofit.checks import assess, thresholds_for
 from retrofit.errors import CaseFileError
 from retrofit.refrigerants import find
 from retrofit.report.machine import UNITS
-from retrofit.study import compare
+from retrofit.study import RestState, Verdict, compare
 from retrofit.study.hardware.numbers import OldNew
 from retrofit.units import IP, SI, told
 
@@ -85,11 +85,14 @@ def turned(comparison, *, plant=None, case=None, new=None, performance=None, **n
     first = comparison.candidates[0]
     found = first.hardware_numbers
     side = replace(found.new, **(new or {}))
-    duty = first.duty
+    duty, rest = first.duty, first.at_rest
+    if new and "p_standstill_Pa" in new:
+        state = RestState.NOT_COMPUTED if new["p_standstill_Pa"] is None else RestState.COMPUTED
+        rest = replace(rest, p_Pa=new["p_standstill_Pa"], state=state)
     if performance:
         side = replace(side, design=replace(side.design, **performance), hottest=replace(side.hottest, **performance))
         duty = replace(duty, **performance)
-    entry = replace(first, duty=duty, hardware_numbers=replace(found, new=side, **numbers))
+    entry = replace(first, duty=duty, at_rest=rest, hardware_numbers=replace(found, new=side, **numbers))
     tables = {"plant": comparison.case.plant.model_copy(update=plant or {}), **(case or {})}
     return replace(comparison, case=replace(comparison.case, **tables), candidates=(entry,))
 
@@ -536,12 +539,14 @@ def test_a_pressure_above_a_limit_is_never_softened_by_what_is_missing(whole):
 
 
 def test_unknown_components_leave_the_verdict_alone(whole):
-    """Lines, motor or valve that are not known do not turn a verdict; a nameplate that is not known does."""
+    """Lines, motor or valve that are not known do not turn a verdict; a nameplate that is not known is decisive."""
     bare = replace(whole, case=replace(whole.case, valve=None, receiver=None, controls=None))
     plain = turned(whole, plant={"high_side_limit_Pa": None})
 
-    assert assess(whole).candidates[0].verdict == assess(bare).candidates[0].verdict == "suits with work"
-    assert assess(plain).candidates[0].verdict == "cannot be said"
+    assert assess(whole).candidates[0].verdict == assess(bare).candidates[0].verdict == Verdict.OPEN
+    assert {item.code for item in assess(plain).candidates[0].open_facts} == {
+        *("high-side", "room-charge", "law-not-checked"),
+    }
 
 
 def test_what_a_gate_says_is_not_said_twice(whole):

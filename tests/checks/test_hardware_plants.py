@@ -7,7 +7,7 @@ the digits shown; they are no published values. What is asserted is the verdict,
 import pytest
 
 from retrofit.checks import assess
-from retrofit.study import compare
+from retrofit.study import Verdict, compare
 
 SPLIT = {
     "plant": {"oil": "mineral", "high_side_limit": "26 bar g", "highest_ambient": "63 degC"},
@@ -117,7 +117,7 @@ def test_a_split_for_26_bar_does_not_hold_r407c_at_rest(case_with):
     assert candidate.measures[0].new / 1e5 == pytest.approx(28.5, abs=0.1)
     assert candidate.measures[0].old / 1e5 == pytest.approx(24.9, abs=0.1)
     assert (today.verdict, candidate.verdict) == ("unknown", "replace")
-    assert found[1].verdict == "does not suit"
+    assert found[1].verdict == Verdict.NOT_SUITABLE
 
 
 def test_copper_in_a_cold_store_stops_ammonia(case_with):
@@ -135,7 +135,7 @@ def test_a_heat_pump_has_no_conversion(case_with):
     """R410A to R32, R454B, R452B or R290: each is stopped, and none is called an easy change."""
     found = assess(compare(case_with("R410A", ["R32", "R454B", "R452B", "R290"], **HEAT_PUMP))).candidates
 
-    assert [entry.verdict for entry in found] == ["does not suit"] * 4
+    assert [entry.verdict for entry in found] == [Verdict.NOT_SUITABLE] * 4
     assert all(rows(entry)["controller"].verdict == "replace" for entry in found)
 
 

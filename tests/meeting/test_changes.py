@@ -114,6 +114,98 @@ def test_a_late_form_changes_only_what_was_changed_on_it(client):
     assert dict(client.state.changes) == {"duty.condensing": "45 degC", "duty.subcooling": "6 K"}
 
 
+def test_two_windows_that_change_the_same_are_told(client, read):
+    """The second one's change, made on a page before the first one's, is not taken: the input names both texts."""
+    seen = client.session.version
+    client.change(**{"in.duty.condensing": "45 degC"})
+    client.post(seen=seen, window="b", **{"in.duty.condensing": "47 degC"})
+    elements, text = read(client.page())
+    field = next(named for tag, named in elements if named.get("name") == "in.duty.condensing")
+    refused = dict(client.state.changes)
+    client.change(window="b", **{"in.duty.condensing": "47 degC"})
+
+    assert refused == {"duty.condensing": "45 degC"}
+    assert "Condensing: changed to 45 degC (was 42 degC) by another window meanwhile, so 47 degC was not taken" in text
+    assert field["value"] == "45 degC"
+    assert dict(client.state.changes) == {"duty.condensing": "47 degC"}
+    assert "by another window" not in client.page()
+
+
+def test_what_another_window_changed_beside_it_is_told(client, read):
+    """A change of something else is taken, and the page names what its window had not seen."""
+    seen = client.session.version
+    client.change("hide R454C")
+    client.post(seen=seen, window="b", **{"in.duty.condensing": "47 degC"})
+    _, text = read(client.page())
+    client.change(**{"in.duty.condensing": "48 degC"})
+
+    assert dict(client.state.changes)["duty.condensing"] == "48 degC"
+    assert "a page that did not show this yet. R454C hidden: changed to yes (was nothing)." in text
+    assert "did not show this yet" not in client.page()
+
+
+def test_a_window_is_not_told_of_itself(client):
+    """Typing on before the answer is there: the second form of one window is later than its first, and taken."""
+    seen = client.session.version
+    client.post(seen=seen, window="a", **{"in.duty.condensing": "4 degC"})
+    client.post(seen=seen, window="a", **{"in.duty.condensing": "45 degC"})
+
+    assert dict(client.state.changes) == {"duty.condensing": "45 degC"}
+    assert "by another window" not in client.page()
+    assert "did not show this yet" not in client.page()
+
+
+TAKEN_BACK = {
+    "undo": {"act": "undo"},
+    "all inputs": {"act": "reset"},
+    "note": {"act": "note", "n.meeting": "Second text"},
+    "weight": {"act": "weigh", "w.energy": "2", "w.climate": "9"},
+}
+
+
+@pytest.mark.parametrize("form", TAKEN_BACK.values(), ids=TAKEN_BACK)
+def test_nothing_of_another_window_is_taken_back_unseen(form, client, read):
+    """Undo, reset, notes and weights: what the first window did stands, and the second is told of it."""
+    seen = client.session.version
+    client.change("note", window="a", **{"n.meeting": "First text"})
+    client.change("weigh", window="a", **{"w.energy": "7"})
+    client.change(window="a", **{"in.duty.condensing": "45 degC"})
+    before = client.state
+    client.post(seen=seen, window="b", **form)
+    _, text = read(client.page())
+
+    assert client.state == before
+    assert re.search(r"changed to .* \(was .*\) by another window meanwhile", text)
+    if "n.meeting" in form:
+        assert "Second text" in text  # what was written is not lost
+
+
+def test_weights_of_another_window_stay(client):
+    """A form carries all weights; only those that were changed on it are taken."""
+    seen = client.session.version
+    client.change("weigh", window="a", **{"w.energy": "7"})
+    client.post("weigh", seen=seen, window="b", **{"w.energy": "5", "w.climate": "9"})
+
+    assert dict(client.state.weights) == {"energy": 7, "climate": 9}
+
+
+@pytest.mark.parametrize("text", ["000000999999", "0" * 200, "11", "-1", "1e1", "5.0", "\u0665", "", " "])
+def test_a_weight_out_of_range_is_told_however_it_is_written(text, client):
+    """Zeros in front do not hide a number, and nothing written there ends the page."""
+    page = client.change("weigh", **{"w.energy": text})
+
+    assert "Not taken: a weight is a whole number from 0 to 10" in page
+    assert client.state.weights == ()
+    assert client.get("/").status_code == 200
+
+
+def test_a_weight_may_have_zeros_in_front(client):
+    """007 is seven."""
+    client.change("weigh", **{"w.energy": "007"})
+
+    assert dict(client.state.weights) == {"energy": 7}
+
+
 def test_a_form_from_nowhere_is_refused_in_words(client):
     """A version that never was changes nothing, and the page says so."""
     client.post(seen=999, **{"in.duty.condensing": "45 degC"})
@@ -332,3 +424,11 @@ def test_what_rules_a_candidate_out_is_told_at_that_candidate(client):
 
     assert len(stopped) == 2
     assert all("Less mild safety class" in player.reasons for player in stopped)
+
+
+def test_the_cautions_scroll_under_what_stays_in_sight(client):
+    """The strip of the plant today stays at the top of the window: nothing of the block lies above it."""
+    html = client.get("/").text
+
+    assert 'id="cautions"' in html
+    assert "z-index:2147483647" not in html

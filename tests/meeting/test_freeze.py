@@ -1,18 +1,28 @@
 """Freezing: a whole case file and its report beside the original, and nothing else anywhere."""
 
+import contextlib
+import fcntl
+import os
 import re
+import signal
+import subprocess
+import sys
 import threading
 import time
 import tomllib
+from datetime import datetime
 
 import pytest
 
 from retrofit.case import as_key, as_toml, laid_over, read_case
 from retrofit.checks import assess
-from retrofit.meeting import writer
-from retrofit.meeting.freeze import whole_toml
+from retrofit.errors import ReportError
+from retrofit.meeting import session_of, writer
+from retrofit.meeting.freeze import freeze, whole_toml
+from retrofit.meeting.pair import publish, repair
+from retrofit.report.carried import read_carried
 from retrofit.study import compare
-from tests.meeting.conftest import ROOT
+from tests.meeting.conftest import ROOT, Client, case_text
 
 SHIPPED = sorted(path.stem for path in (ROOT / "cases").glob("*.toml"))
 
@@ -73,16 +83,154 @@ def test_nothing_is_overwritten(client, case_file):
 
 def test_what_cannot_be_written_is_said_on_the_page(client, case_file, monkeypatch):
     """A report that fails leaves no half of a revision, and the page says why."""
-    from retrofit.errors import ReportError
 
     def fail(*parts, **named):
         raise ReportError("the disk is full")
 
-    monkeypatch.setattr("retrofit.meeting.freeze.write_report", fail)
+    monkeypatch.setattr("retrofit.meeting.freeze.render_html", fail)
     page = client.change(path="/freeze", what="never")
 
     assert "Not frozen: the disk is full" in page
     assert [path.name for path in case_file.parent.iterdir()] == ["market.toml"]
+
+
+def test_what_hindered_a_revision_is_not_said_beside_the_next(client, monkeypatch):
+    """Once one is written, the page shows that one alone."""
+    monkeypatch.setattr("retrofit.meeting.freeze.render_html", lambda *parts, **named: 1 / 0)
+    assert "Not frozen" in client.change(path="/freeze", what="never")
+    monkeypatch.undo()
+    page = client.change(path="/freeze", what="at last")
+
+    assert "market-rev-a.html" in page
+    assert "Not frozen" not in page
+
+
+def test_every_revision_lists_all_before_it(client, case_file, monkeypatch):
+    """Those of the same meeting, and those of a meeting before it on the same case."""
+    monkeypatch.setattr("retrofit.meeting.freeze.render_html", lambda *parts, **named: "<html></html>")
+    for what in ("first", "second"):
+        client.change(path="/freeze", what=what)
+    later = Client(session_of(case_file))
+    later.change(path="/freeze", what="third")
+    listed = {
+        letter: [
+            (row.rev, row.what) for row in read_case(case_file.with_name(f"market-rev-{letter}.toml")).report.revisions
+        ]
+        for letter in "abc"
+    }
+
+    assert listed["a"] == [("A", "first")]
+    assert listed["b"] == [("A", "first"), ("B", "second")]
+    assert listed["c"] == [("A", "first"), ("B", "second"), ("C", "third")]
+
+
+KILLED = """
+import os, signal, sys
+from datetime import datetime
+from pathlib import Path
+from retrofit.meeting import freeze, pair, session_of
+
+at, count = int(sys.argv[1]), 0
+def before(function):
+    def run(*parts, **named):
+        global count
+        count += 1
+        if count == at:
+            os.kill(os.getpid(), getattr(signal, sys.argv[2]))
+        return function(*parts, **named)
+    return run
+
+session = session_of("market.toml")
+freeze.assess = freeze.whole = lambda *parts: None
+freeze.compare = before(lambda case: None)
+freeze.render_html = before(lambda *parts, **named: Path(sys.argv[3]).read_text(encoding="utf-8"))
+os.fsync, os.link, pair.Path.unlink = before(os.fsync), before(os.link), before(pair.Path.unlink)
+freeze.freeze(session.source, session.state, "killed", datetime(2027, 1, 15))
+"""
+
+
+@pytest.fixture(scope="module")
+def drawn(tmp_path_factory):
+    """Return the report of the revision that the killed processes write."""
+    folder = tmp_path_factory.mktemp("drawn")
+    (folder / "market.toml").write_text(case_text(has_year=False), encoding="utf-8")
+    with contextlib.chdir(folder):
+        session = session_of("market.toml")
+        return folder / freeze(session.source, session.state, "killed", datetime(2027, 1, 15)).report
+
+
+@pytest.mark.parametrize(
+    ("at", "name"), [*((at, "SIGKILL") for at in range(1, 9)), *((at, "SIGTERM") for at in (4, 6))]
+)
+def test_a_killed_process_leaves_both_files_or_none(case_file, drawn, at, name):
+    """Killed before any step: a revision is there whole or not at all, at the latest when the next meeting begins.
+
+    The steps: solve, draw the page, write the case, write the report, name the report, name the case, tidy up twice.
+    """
+    code = [sys.executable, "-c", KILLED, str(at), name, str(drawn)]
+    ended = subprocess.run(
+        code, cwd=case_file.parent, env={**os.environ, "PYTHONPATH": str(ROOT)}, timeout=120, check=False
+    )
+    revision = case_file.with_name("market-rev-a.toml")
+    report = revision.with_suffix(".html")
+
+    assert ended.returncode == -getattr(signal, name)
+    assert report.exists() or not revision.exists()  # never a revision without its report
+    session_of(case_file)
+    assert revision.exists() == report.exists() == (at > 5)
+    assert [path.name for path in case_file.parent.iterdir() if path.name.startswith(".")] == []
+    if at > 5:
+        assert read_carried(report).case_text == revision.read_text(encoding="utf-8")
+
+
+def test_what_another_meeting_is_writing_is_left_alone(case_file):
+    """Only what an ended process left is tidied up."""
+    half = case_file.with_name(".half-market-rev-a.toml.x1y2z3")
+    half.write_text("half")
+    with open(half, "rb") as held:
+        fcntl.flock(held, fcntl.LOCK_EX)
+        repair(case_file)
+        assert half.exists()
+    repair(case_file)
+    assert not half.exists()
+
+
+def test_two_meetings_never_take_one_name(case_file):
+    """The name of the case, or of the report, is taken at the last moment: neither file is touched, nothing is left."""
+    revision = case_file.with_name("market-rev-a.toml")
+    for taken in (revision, revision.with_suffix(".html")):
+        taken.write_text("theirs")
+        assert publish(revision, "ours", "ours") is False
+        assert taken.read_text() == "theirs"
+        assert sorted(path.name for path in case_file.parent.iterdir()) == sorted(["market.toml", taken.name])
+        taken.unlink()
+
+
+def test_a_meeting_that_is_told_to_end_finishes_its_revision(case_file):
+    """SIGTERM, as a machine that shuts down sends it, ends the meeting like Ctrl-C: both files are written first."""
+    code = (
+        "import os, signal, sys, threading\n"
+        "from datetime import datetime\n"
+        "from retrofit.meeting import session_of\n"
+        "from retrofit.meeting.server import serve\n"
+        "from retrofit.meeting.writer import Writer\n"
+        "session = session_of(sys.argv[1])\n"
+        "Writer(session, 0.0).begin('last', datetime.now())\n"
+        "def say(text):\n"
+        "    print(text)\n"
+        "    if 'Ctrl-C' in text:\n"
+        "        threading.Timer(0.3, os.kill, (os.getpid(), signal.SIGTERM)).start()\n"
+        "serve(session, 0, False, say)\n"
+    )
+    ended = subprocess.run(
+        [sys.executable, "-c", code, str(case_file)], cwd=ROOT, timeout=120, check=False, capture_output=True, text=True
+    )
+
+    assert ended.returncode == 0, ended.stderr
+    assert "The meeting is over." in ended.stdout
+    assert sorted(path.name for path in case_file.parent.iterdir()) == [
+        "market-rev-a.html", "market-rev-a.toml", "market.toml",
+    ]  # fmt: skip
 
 
 @pytest.mark.parametrize("name", SHIPPED)
@@ -124,9 +272,6 @@ def test_the_name_comes_from_the_server(client, case_file):
 
 def test_a_revision_of_the_case_is_counted_on(case_file):
     """A case that has revisions A and B gets C, in its table and in the names of the files."""
-    from retrofit.meeting import session_of
-    from tests.meeting.conftest import Client
-
     text = case_file.read_text(encoding="utf-8")
     rows = 'revisions = [["A", "2026-11-20", "first", "x"], ["B", "2026-11-21", "second", "x"]]'
     case_file.write_text(text.replace("revisions = []", rows), encoding="utf-8")
@@ -167,3 +312,13 @@ def test_a_fault_while_writing_is_told(client, case_file, monkeypatch):
 
     assert "Not frozen: by a fault of the program" in broken
     assert "market-rev-a.html" in after
+
+
+def test_what_a_window_has_not_seen_is_not_frozen_by_it(client, case_file):
+    """Another window changed an input meanwhile: no revision is written, and the page names the change."""
+    seen = client.session.version
+    client.change(window="a", **{"in.duty.condensing": "45 degC"})
+    client.post(path="/freeze", seen=seen, window="b", what="agreed")
+
+    assert "Condensing: changed to 45 degC (was 42 degC) by another window meanwhile" in client.page()
+    assert [path.name for path in case_file.parent.iterdir()] == ["market.toml"]

@@ -11,6 +11,7 @@ import urllib.request
 
 import pytest
 
+from retrofit.meeting.server import ARRIVES_S
 from tests.meeting.conftest import ROOT
 
 
@@ -58,6 +59,54 @@ def test_it_serves_and_ends_with_the_keyboard(started, case_file):
     assert "The meeting is over" in out
     assert "Traceback" not in err
     assert [path.name for path in case_file.parent.iterdir()] == ["market.toml"]
+
+
+DRIPPED = {
+    "in its head": b"GET / HTTP/1.1\r\nHost: 127.0.0.1\r\nX-Slow: ",
+    "in its body": b"POST /change HTTP/1.1\r\nHost: 127.0.0.1\r\nContent-Type: application/x-www-form-urlencoded\r\n"
+    b"Content-Length: 900\r\n\r\na=",
+    "in pieces": b"POST /change HTTP/1.1\r\nHost: 127.0.0.1\r\nTransfer-Encoding: chunked\r\n"
+    b"Content-Type: application/x-www-form-urlencoded\r\n\r\n9\r\na=",
+}
+
+
+@pytest.mark.parametrize("begun", DRIPPED.values(), ids=DRIPPED)
+def test_connections_that_drip_do_not_keep_the_meeting(begun, started):
+    """More connections than there are places, each with a byte a second: the page still comes, and they are closed."""
+    _, address = started()
+    port = int(address.rstrip("/").rpartition(":")[2])
+    with urllib.request.urlopen(address, timeout=30) as answer:  # the first answer is computed
+        answer.read()
+    dripping = [socket.create_connection(("127.0.0.1", port), timeout=5) for _ in range(100)]
+    begin = time.monotonic()
+    for connection in dripping:
+        connection.sendall(begun)
+    with urllib.request.urlopen(f"{address}news?seen=1", timeout=20) as answer:
+        status, waited = answer.status, time.monotonic() - begin
+    alive = list(dripping)
+    while alive and time.monotonic() - begin < ARRIVES_S + 15.0:
+        time.sleep(1.0)
+        alive = [connection for connection in alive if _drips(connection)]
+    for connection in dripping:
+        connection.close()
+
+    assert status in (200, 204)
+    assert waited < ARRIVES_S  # nobody had to be closed for the time it took
+    assert alive == []
+
+
+def _drips(connection):
+    """Send one more byte, and say whether the other side still listens."""
+    try:
+        connection.sendall(b"1")
+        connection.setblocking(False)
+        return connection.recv(1000) != b"" and _drips(connection)
+    except BlockingIOError:
+        return True
+    except OSError:
+        return False
+    finally:
+        connection.setblocking(True)
 
 
 def test_it_listens_on_this_machine_alone(started):

@@ -9,6 +9,7 @@ from retrofit.case import read_case
 from retrofit.checks import assess
 from retrofit.checks.changeover import chosen_for_cards
 from retrofit.report import render_html
+from retrofit.report.guard import check_page
 from retrofit.study import compare
 
 ROOT = Path(__file__).resolve().parents[2]
@@ -201,3 +202,41 @@ def test_tables_of_the_hardware_fit_the_paper(many, browser):
 
     assert len(rights) > 10
     assert max(rights) <= 689
+
+
+COVERS = {
+    "fixed": ".ours { position: fixed; inset: 0; background: white; z-index: 1000 }",
+    "shadow": ".ours { position: relative; box-shadow: 0 0 0 9000px white; z-index: 1000 }",
+    "same colours": ":root { --ink: white; --quiet: white } body { color: white } .caution p, h2 { color: #fff }",
+    "paper of the ink": "body { background: #16181a }",
+}
+
+
+@pytest.mark.parametrize("style", COVERS.values(), ids=COVERS)
+def test_what_a_template_may_say_leaves_the_cautions_on_top(style, browser, tmp_path, page_of):
+    """Styles that pass the last look: at the middle of each text of a caution a reader's pointer meets that text,
+    on another colour than its own (computed styles of Chromium)."""
+    html = page_of("bottle-cooler", "si")
+    start = html.index('<section id="cautions"')
+    cautions = html[start : html.index("</section>", start) + len("</section>")]
+    html = html.replace("</style>", f"{style}</style>", 1).replace("</main>", '<div class="ours">Ours</div></main>')
+    check_page(html, cautions)
+    (tmp_path / "page.html").write_text(html, encoding="utf-8")
+
+    page = browser.new_page()
+    page.goto((tmp_path / "page.html").as_uri())
+    met = page.evaluate(
+        """() => [...document.querySelectorAll('#cautions p, #cautions strong')].map(part => {
+            part.scrollIntoView({block: 'center'});
+            const range = document.createRange();
+            range.selectNodeContents(part);
+            const box = range.getClientRects()[0];
+            const on_top = document.elementFromPoint(box.left + box.width / 2, box.top + box.height / 2);
+            const paper = getComputedStyle(document.querySelector('#cautions')).backgroundColor;
+            return [part.contains(on_top), getComputedStyle(part).color !== paper];
+        })"""
+    )
+    page.close()
+
+    assert len(met) >= 4
+    assert all(all(pair) for pair in met)

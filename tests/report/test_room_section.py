@@ -160,7 +160,7 @@ def test_both_candidates_of_an_unresolved_limit_are_shown(case_with, made_at, re
 
 
 def test_conditions_instead_of_a_limit_are_listed_once(case_with, made_at, read_page):
-    """All parts in a machinery room: no limit by EN 378, which reads "none", and the conditions stand under the table."""
+    """All parts in a machinery room: no limit by EN 378, which reads "none"; the conditions stand under the table."""
     room = {"volume": "100 m3", "location": "III", "access": "c", "comfort": False, "largest_circuit": "20 kg"}
     case = case_with(candidates=("R454B",), plant={"charge": "20 kg"}, room=room, law={"code": "EN 378"})
     result = assess(compare(case))

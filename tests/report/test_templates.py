@@ -1,5 +1,8 @@
 """The reader's own templates are laid over the built-in ones, and cannot take the cautions away."""
 
+import os
+import resource
+import sys
 from pathlib import Path
 
 import pytest
@@ -78,11 +81,13 @@ def test_a_template_cannot_drop_the_cautions(instead, render):
         render(report=report_with("{{ cautions }}", instead))
 
 
-@pytest.mark.parametrize("rule", [".ours { display: none }", "#box{max-height:0}", "x-y > div { visibility: hidden }"])
+@pytest.mark.parametrize(
+    "rule", [".ours { display: none }", "#box{max-height:0}", "article > div { visibility: hidden }"]
+)
 def test_what_is_around_the_cautions_cannot_be_hidden_by_style(rule, render):
     """A rule that hides an element which the template has put around the block is refused too."""
     style = (BUILT_IN / "style.html").read_text(encoding="utf-8")
-    around = '<x-y><div class="mine ours" id="box">{{ cautions }}</div></x-y>'
+    around = '<article><div class="mine ours" id="box">{{ cautions }}</div></article>'
 
     with pytest.raises(ReportError, match="can hide the cautions"):
         render(style=style + rule, report=report_with("{{ cautions }}", around))
@@ -100,7 +105,7 @@ HIDING = {
     "by id": "#cautions { display: none }",
     "by class": ".caution{visibility:hidden}",
     "by element": "main section { opacity: 0 }",
-    "by place": "main > :nth-child(2) { display: none }",
+    "by place": "main > :nth-child(3) { display: none }",
     "all": "* { font-size: 0 }",
     "in a medium": "@media print { #cautions { display: none } }",
     "escaped": r"#c\61utions { display: none }",
@@ -159,6 +164,50 @@ def test_a_fault_in_an_own_template_names_file_and_line(text, line, render):
     """The error is ours and begins with the template's file and line."""
     with pytest.raises(ReportError, match=rf"colophon\.html:{line}: "):
         render(colophon=text)
+
+
+ENDLESS = {
+    "long text": "{{ 'a' * 10**10 }}",
+    "long text of a name": "{% set n = 10**10 %}{{ 'a' * n }}",
+    "wide number": "{{ '%10000000000d'|format(1) }}",
+    "wide text": "{{ 'a'|center(10**10) }}",
+    "doubled": "{% set ns = namespace(t='a') %}{% for i in range(60) %}{% set ns.t = ns.t ~ ns.t %}{% endfor %}",
+    "high power": "{{ 10**(10**9) }}",
+    "loop in a loop": "{% for a in range(99999) %}{% for b in range(99999) %}{% endfor %}{% endfor %}",
+    "long page": "{% for a in range(99999) %}{{ 'long enough' * 99 }}{% endfor %}",
+    "calls itself twice": "{% macro m(n) %}{% if n %}{{ m(n - 1) ~ m(n - 1) }}{% endif %}{% endmacro %}{{ m(60) }}",
+}
+
+
+@pytest.mark.skipif(sys.platform != "linux", reason="the limits of a process are those of Linux")
+@pytest.mark.parametrize("text", ENDLESS.values(), ids=ENDLESS)
+def test_a_template_that_takes_too_much_is_ended(text, render):
+    """Time and memory of templates are bounded: ten seconds of computing, half a gigabyte, 20 million letters."""
+    children = resource.getrusage(resource.RUSAGE_CHILDREN)
+    spent = children.ru_utime + children.ru_stime
+
+    with pytest.raises(ReportError, match=r"computes for more than 10 s|512 MB|more than 20000000 letters"):
+        render(colophon=text)
+
+    children = resource.getrusage(resource.RUSAGE_CHILDREN)
+    assert children.ru_utime + children.ru_stime - spent < 15
+    assert children.ru_maxrss < 1_000_000  # kB
+
+
+def test_a_template_that_is_not_a_file_is_not_read(small, made_at, tmp_path):
+    """A pipe under the name of a template is no template: the built-in one stands in, and nothing waits for it."""
+    os.mkfifo(tmp_path / "colophon.html")
+
+    html = render_html(small, template_folder=tmp_path, made_at=made_at)
+
+    assert html == render_html(small, made_at=made_at)
+
+
+def test_every_shipped_page_passes_through_a_process_of_its_own(lived, made_at, tmp_path):
+    """An empty folder of templates gives the page of the built-in ones, with everything a page can hold."""
+    result = lived("harbour-market")
+
+    assert render_html(result, template_folder=tmp_path, made_at=made_at) == render_html(result, made_at=made_at)
 
 
 def test_text_in_an_own_template_is_escaped(render):

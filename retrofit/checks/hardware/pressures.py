@@ -2,18 +2,21 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Iterator
 
 from retrofit.checks.at_rest import ABOVE_PLATE
 from retrofit.checks.corners import conditions, worst
+from retrofit.checks.gauge import share_text, times_below
 from retrofit.checks.hardware.rows import Bound, Matter, View, judged, performance_measure, stated
 from retrofit.study import Component, Measure
 from retrofit.study.hardware.numbers import OldNew
 from retrofit.units import quantity
 
 
-def _gauge(p_Pa: float) -> str:
-    return quantity("gauge pressure", p_Pa, ".1f")
+def _gauge(view: View, p_Pa: float) -> str:
+    """Return an absolute pressure as gauges at the plant show it, for a sentence. [Pa]"""
+    return quantity("gauge pressure", p_Pa - view.case.plant.ambient_pressure_Pa, ".1f")
 
 
 def _condensing(view: View) -> tuple[Measure, Measure]:
@@ -24,52 +27,54 @@ def _condensing(view: View) -> tuple[Measure, Measure]:
 
 
 def _highest(view: View) -> float | None:
-    """Return the highest condensing pressure known, as a gauge shows it; None if none is. [Pa]"""
+    """Return the highest condensing pressure known, absolute; None if none is. [Pa]"""
     if conditions(view.entry):
-        return view.gauge(worst(view.entry, "p_cond_Pa").value)
-    return view.gauge(view.entry.at_rest.p_condensing_Pa) if view.entry.at_rest else None
+        return worst(view.entry, "p_cond_Pa").value
+    return view.entry.at_rest.p_condensing_Pa if view.entry.at_rest else None
 
 
 def high_side(view: View) -> Iterator[Component]:
     """Compare condensing with the nameplate of the high side."""
     plate = view.case.plant.high_side_limit_Pa
     missing, highest = [view.gap("hottest")], _highest(view)
-    fact = "It does not condense." if highest is None else f"Condensing reaches {_gauge(highest)}."
+    fact = "It does not condense" if highest is None else f"Condensing reaches {_gauge(view, highest)}"
+    share = view.share(highest, plate)
     if plate is None:
         missing.insert(0, "`high_side_limit` in [plant] is not given")
-    elif highest is not None:
-        share = highest / (plate - view.case.plant.ambient_pressure_Pa)
-        fact = f"Condensing reaches {_gauge(highest)}, {share:.0%} of the nameplate pressure."
+    elif share is not None:
+        fact += f", {share_text(share)} of the nameplate pressure"
     measures = (*_condensing(view), view.pressures("Nameplate of the high side", OldNew(plate, plate)))
     ask = "Written confirmation of the maximum pressure of each vessel and part of the high side."
     bound = Bound(view.limits["high_side"])
     yield judged(
-        Matter("high-side", "High side, nameplate", fact, measures, (bound,), ask), [view.level("high-side")], missing
+        Matter("high-side", "High side, nameplate", f"{fact}.", measures, (bound,), ask),
+        [view.level("high-side")],
+        missing,
     )
 
 
 def switch(view: View) -> Iterator[Component]:
     """Compare the high-pressure switch, which stays with the vessel, with nameplate and hottest day."""
     cut_out = view.case.controls.high_pressure_cut_out_Pa if view.case.controls else None
-    plate, highest = view.gauge(view.case.plant.high_side_limit_Pa), _highest(view)
+    plate, highest = view.case.plant.high_side_limit_Pa, _highest(view)
     assert highest is not None, "asked for solved refrigerants only"
     bounds = Bound(view.limits["switch_setting"]), Bound(view.limits["switch_margin"])
     ask = "Range of the switch; which setting the vessel, not the refrigerant, allows."
     measures = (view.pressures("Cut-out", OldNew(cut_out, cut_out)), *_condensing(view))
     gaps = [] if plate is not None else ["`high_side_limit` in [plant] is not given"]
-    setting = view.gauge(cut_out)
-    if setting is None:
+    share = view.share(highest, cut_out)
+    if cut_out is None or share is None:
         matter = Matter("high-pressure-switch", "High-pressure switch", "", measures, bounds, ask)
         yield judged(matter, [], ["`high_pressure_cut_out` in [controls] is not given"])
         return
-    levels = [bounds[1].level(highest / setting)]
-    fact = f"Condensing reaches {_gauge(highest)}, {highest / setting:.0%} of the cut-out at {_gauge(setting)}"
-    if plate is not None:
-        levels.append(bounds[0].level(setting / plate))
-        fact += f", which is {setting / plate:.0%} of the nameplate"
+    levels = [bounds[1].level(share)]
+    fact = f"Condensing reaches {_gauge(view, highest)}, {share_text(share)} of the cut-out at {_gauge(view, cut_out)}"
+    of_plate, condensing_of_plate = view.share(cut_out, plate), view.share(highest, plate)
+    if of_plate is not None and condensing_of_plate is not None:
+        levels.append(bounds[0].level(of_plate))
+        fact += f", which is {share_text(of_plate)} of the nameplate"
         # A switch set too low can be raised as far as the vessel allows.
-        top = (bounds[0].limit.work or 1.0) * plate
-        if highest < top and setting < top:
+        if max(of_plate, condensing_of_plate) < (bounds[0].limit.work or 1.0):
             levels[0] = "work" if levels[0] else None
     matter = Matter("high-pressure-switch", "High-pressure switch", f"{fact}.", measures, bounds, ask)
     yield judged(matter, levels, [*gaps, view.numbers.new.missing["hottest"]])
@@ -77,11 +82,11 @@ def switch(view: View) -> Iterator[Component]:
 
 def relief(view: View) -> Iterator[Component]:
     """Compare the relief valve of the high side with the highest pressure in operation and at rest."""
-    setting, rest = view.gauge(view.case.plant.relief_setting_Pa), view.gauge(_rest(view).new)
-    plate, operating = view.gauge(view.case.plant.high_side_limit_Pa), _highest(view)
+    setting, rest = view.case.plant.relief_setting_Pa, _rest(view).new
+    plate, operating = view.case.plant.high_side_limit_Pa, _highest(view)
     bounds = Bound(view.limits["relief_margin"], "below"), Bound(view.limits["relief_seep"])
     measures = (
-        view.pressures("Relief setting", OldNew(*[view.case.plant.relief_setting_Pa] * 2)),
+        view.pressures("Relief setting", OldNew(setting, setting)),
         *_condensing(view),
         _at_rest(view),
     )
@@ -90,15 +95,18 @@ def relief(view: View) -> Iterator[Component]:
         matter = Matter("relief", "Relief valve, setting", "", measures, bounds, ask)
         yield judged(matter, [], ["`relief_setting` in [plant] is not given"])
         return
-    levels, fact = [view.level("relief")], f"It opens at {_gauge(setting)}"
-    if operating is not None:
-        levels += [bounds[0].level(setting / operating), bounds[1].level(operating / setting)]
-        fact += f", {setting / operating:.2f} times the {_gauge(operating)} reached in operation"
-    if rest is not None:
-        levels.append(bounds[1].level(rest / setting))
-        fact += f"; at rest there are {_gauge(rest)}"
-    if plate is not None and setting > plate * (1.0 + ABOVE_PLATE):
-        fact += f"; it is set above the nameplate's {_gauge(plate)}"
+    levels, fact = [view.level("relief")], f"It opens at {_gauge(view, setting)}"
+    share, at_rest, of_plate = view.share(operating, setting), view.share(rest, setting), view.share(setting, plate)
+    if operating is not None and share is not None:
+        margin = times_below(share)
+        levels += [bounds[0].level(margin), bounds[1].level(share)]
+        times = f"{margin:.2f} times" if math.isfinite(margin) else "above"
+        fact += f", {times} the {_gauge(view, operating)} reached in operation"
+    if rest is not None and at_rest is not None:
+        levels.append(bounds[1].level(at_rest))
+        fact += f"; at rest there are {_gauge(view, rest)}"
+    if plate is not None and of_plate is not None and of_plate > 1.0 + ABOVE_PLATE:
+        fact += f"; it is set above the nameplate's {_gauge(view, plate)}"
     gaps = [view.gap(name) for name in ("hottest", "standstill")]
     if plate is None:
         gaps.append("`high_side_limit` in [plant] is not given")
@@ -126,24 +134,25 @@ def _rest(view: View) -> OldNew:
 
 def standstill(view: View) -> Iterator[Component]:
     """Compare the bubble pressure at the highest ambient temperature with the weakest side."""
-    plant, rest = view.case.plant, view.gauge(_rest(view).new)
-    low, high = view.gauge(plant.low_side_limit_Pa), view.gauge(plant.high_side_limit_Pa)
-    plates = [plate for plate in (low, high) if plate is not None]
+    plant, rest = view.case.plant, _rest(view).new
+    low, high = plant.low_side_limit_Pa, plant.high_side_limit_Pa
+    weakest = min((plate for plate in (low, high) if plate is not None), default=None)
     bound = Bound(view.limits["standstill"])
     measures = (
         _at_rest(view),
-        view.pressures("Nameplate of the low side", OldNew(*[plant.low_side_limit_Pa] * 2)),
-        view.pressures("Nameplate of the high side", OldNew(*[plant.high_side_limit_Pa] * 2)),
+        view.pressures("Nameplate of the low side", OldNew(low, low)),
+        view.pressures("Nameplate of the high side", OldNew(high, high)),
     )
     gaps = [view.gap("standstill")]
     gaps += ["`low_side_limit` in [plant] is not given"] if low is None else []
-    share = rest / min(plates) if rest is not None and plates else None
+    share = view.share(rest, weakest)
     fact = ""
     if rest is not None:
-        fact = f"At rest at the highest ambient temperature there are {_gauge(rest)}"
-        fact += f", {share:.0%} of the lowest nameplate's {_gauge(min(plates))}." if share is not None else "."
+        fact = f"At rest at the highest ambient temperature there are {_gauge(view, rest)}"
+    if share is not None and weakest is not None:
+        fact += f", {share_text(share)} of the lowest nameplate's {_gauge(view, weakest)}"
     ask = "Maximum pressure of the low side: evaporators, suction accumulators, crankcase."
-    matter = Matter("standstill", "Low side at standstill", fact, measures, (bound,), ask)
+    matter = Matter("standstill", "Low side at standstill", f"{fact}." if fact else "", measures, (bound,), ask)
     yield judged(matter, [view.level("standstill"), bound.level(share)], gaps)
 
 

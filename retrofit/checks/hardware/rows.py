@@ -6,6 +6,7 @@ from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass
 
 from retrofit.case import Case
+from retrofit.checks.gauge import share_of_limit
 from retrofit.checks.thresholds import Threshold
 from retrofit.study import Comparison, Component, Entry, Finding, Measure
 from retrofit.study.hardware.numbers import HardwareNumbers, OldNew
@@ -66,6 +67,16 @@ class View:
             p_Pa: Pressure, absolute. [Pa]
         """
         return None if p_Pa is None else p_Pa - self.case.plant.ambient_pressure_Pa
+
+    def share(self, p_Pa: float | None, limit_Pa: float | None) -> float | None:
+        """Return a pressure as part of a limit, as gauges at the plant show both; None if one is not known. [-]
+
+        Args:
+            p_Pa, limit_Pa: Pressure and limit, absolute. [Pa]
+        """
+        if p_Pa is None or limit_Pa is None:
+            return None
+        return share_of_limit(p_Pa, limit_Pa, self.case.plant.ambient_pressure_Pa)
 
     def pressures(self, name: str, p: OldNew) -> Measure:
         """Return a measure of two pressures as gauges show them."""

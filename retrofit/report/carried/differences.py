@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 import re
 from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
@@ -128,6 +129,7 @@ def _difference(path: tuple[str, ...], old: object, new: object) -> Difference:
     relative = None
     if _is_number(old) and _is_number(new) and old:
         relative = (new - old) / abs(old)
+        relative = relative if math.isfinite(relative) else None
     quantity = ".".join(path[1:]) or "the refrigerant itself"
     return Difference(path[0], re.sub(r"\s+", " ", quantity), old, new, relative)
 

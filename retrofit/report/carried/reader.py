@@ -5,27 +5,31 @@ from __future__ import annotations
 import base64
 import binascii
 import datetime
-import json
 import os
 import stat
 import zlib
 from collections.abc import Mapping
 from dataclasses import dataclass
-from typing import Any, NoReturn
+from typing import Annotated, Any, NoReturn
 
-from pydantic import BaseModel, ConfigDict, ValidationError
+from pydantic import BaseModel, ConfigDict, Field, ValidationError
 
+from retrofit.case.plant import MOST_CANDIDATES
 from retrofit.case.source import LARGEST_FILE_BYTES
 from retrofit.case.values import is_hidden
 from retrofit.errors import ReportError
 from retrofit.report.carried.block import END, FORMAT, PARTS, START, page_digest
 from retrofit.report.carried.result import digest
+from retrofit.report.carried.strict import strict_json
+from retrofit.study.life import MOST_DRAWS
 from retrofit.units import UNIT_SYSTEMS, shown
 
-LARGEST_REPORT_BYTES = 100_000_000
-LARGEST_RESULT_BYTES = 100_000_000
+LARGEST_REPORT_BYTES = 30_000_000
+LARGEST_BLOCK_BYTES = 20_000_000
+LARGEST_RESULT_BYTES = 10_000_000  # one of forty candidates with their remaining life has some 3 MB
+MOST_SEED = 2**32 - 1
 MOST_FILES = 100
-LONGEST_NAME = 200  # characters
+LONGEST_NAME = 255  # characters; no file system has longer ones
 DEEPEST = 8  # folders
 AGAIN = "take the file as it was written, or write it again with `retrofit report`"
 
@@ -63,7 +67,7 @@ class _Part(BaseModel):
 
 
 class _CasePart(_Part):
-    name: str
+    name: Annotated[str, Field(max_length=LONGEST_NAME)]
     text: str
 
 
@@ -76,6 +80,28 @@ class _Options(_Part):
 class _MadeWith(_Part):
     versions: dict[str, str]
     data: dict[str, str]
+
+
+class _Draws(_Part):
+    number: Annotated[int, Field(ge=0, le=MOST_DRAWS)]
+    seed: Annotated[int, Field(ge=0, le=MOST_SEED)]
+
+
+class _Life(_Part):
+    draws: _Draws | None = None
+
+
+class _Entry(_Part):
+    refrigerant: str
+
+
+class _Result(_Part):
+    """What is read of a result before it is set against another, number by number."""
+
+    title: str
+    existing: _Entry
+    candidates: Annotated[list[_Entry], Field(max_length=MOST_CANDIDATES)]
+    remaining_life: _Life | None = None
 
 
 class _Block(_Part):
@@ -120,7 +146,7 @@ def _bytes_of(path: str, name: str) -> bytes:
     if not raw:
         _refuse(name, f"it is empty; {AGAIN}")
     if len(raw) > LARGEST_REPORT_BYTES:
-        _refuse(name, "it is larger than 100 MB; a report has one or two")
+        _refuse(name, f"it is larger than {LARGEST_REPORT_BYTES / 1e6:g} MB; a report has one or two")
     return raw
 
 
@@ -134,20 +160,16 @@ def _no_block(raw: bytes) -> str:
 
 def _json(raw: bytes, name: str) -> dict[str, Any]:
     try:
-        data = json.loads(raw.decode("ascii"), parse_constant=_no_constant)
-    except (ValueError, RecursionError):
-        _damaged(name, "the data are no JSON in ASCII")
-    found = data.get("format") if isinstance(data, dict) else None
+        data = strict_json(raw, LARGEST_BLOCK_BYTES)
+    except ValueError as error:
+        _damaged(name, str(error))
+    found = data.get("format")
     if found != FORMAT:
         _refuse(
             name, f"the data it carries are of the format {shown(str(found))}, this version reads {FORMAT}; use the "
             "version that stands at the report's end",
         )  # fmt: skip
-    return dict(data)
-
-
-def _no_constant(word: str) -> NoReturn:
-    raise ValueError(f"{word} is no number")
+    return data
 
 
 def _carried(name: str, data: dict[str, Any], page: str) -> Carried:
@@ -161,7 +183,7 @@ def _carried(name: str, data: dict[str, Any], page: str) -> Carried:
         block.case.text.encode("utf-8")
     except ValidationError as error:
         _damaged(name, f"{'.'.join(map(str, error.errors()[0]['loc']))} is missing or of the wrong kind")
-    except (ValueError, RecursionError, zlib.error) as error:
+    except (ValueError, zlib.error) as error:
         _damaged(name, str(error))
     if len(block.case.text.encode("utf-8")) > LARGEST_FILE_BYTES or len(files) > MOST_FILES:
         _refuse(name, f"its case is larger than 1 MB, or has more than {MOST_FILES} files; no case is; {AGAIN}")
@@ -179,12 +201,11 @@ def _result(lines: list[str], name: str) -> dict[str, Any]:
     unpacker = zlib.decompressobj()
     text = unpacker.decompress(_decoded(lines), LARGEST_RESULT_BYTES)
     if unpacker.unconsumed_tail:
-        _refuse(name, f"the result it carries is larger than 100 MB; no result is; {AGAIN}")
+        _refuse(name, f"the result it carries is larger than {LARGEST_RESULT_BYTES / 1e6:g} MB; no result is; {AGAIN}")
     if not unpacker.eof:
         raise ValueError("the result is cut off")
-    result = json.loads(text.decode("ascii"), parse_constant=_no_constant)
-    if not isinstance(result, dict):
-        raise ValueError("the result is no JSON object")
+    result = strict_json(text, LARGEST_RESULT_BYTES)
+    _Result.model_validate(result)
     return result
 
 

@@ -15,7 +15,7 @@ from retrofit.report.carried.made_with import PROGRAM, data_digests, group_of, v
 from retrofit.report.carried.reader import Carried
 from retrofit.report.carried.result import LIFE, digest, result_of
 from retrofit.study import Comparison, compare
-from retrofit.study.life import MOST_DRAWS, with_life
+from retrofit.study.life import with_life
 from retrofit.units import shown
 
 CASE_FILE = "case.toml"
@@ -129,14 +129,8 @@ def _write_inside(folder: Path, files: Mapping[str, bytes], name: str) -> None:
 
 def _lived(comparison: Comparison, carried: Carried) -> Comparison:
     """Return a result with its remaining life if the report has one, by as many draws and the seed that it names."""
-    life = carried.result.get(LIFE)
-    drawn = life.get("draws") if isinstance(life, Mapping) else None
-    if not isinstance(drawn, Mapping):
-        return comparison
-    draws, seed = drawn.get("number"), drawn.get("seed")
-    if not isinstance(draws, int) or not isinstance(seed, int) or not (0 <= draws <= MOST_DRAWS and seed >= 0):
-        return comparison  # then every number of the life differs, and is named
-    return with_life(comparison, draws, seed)
+    drawn = (carried.result.get(LIFE) or {}).get("draws")
+    return with_life(comparison, drawn["number"], drawn["seed"]) if drawn else comparison
 
 
 def _unusable(carried: Carried, error: CaseFileError) -> ReportError:

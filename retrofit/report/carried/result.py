@@ -39,6 +39,8 @@ def rounded(value: Any) -> Any:
     """
     if isinstance(value, float):
         return float(f"{value:.{DIGITS}g}") + 0.0  # -0.0 becomes 0.0
+    if isinstance(value, str):
+        return str(value)  # a state becomes its word, as it is read back
     if isinstance(value, Mapping):
         return {str(key): rounded(item) for key, item in value.items()}
     return [rounded(item) for item in value] if isinstance(value, list | tuple) else value

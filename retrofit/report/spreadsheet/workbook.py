@@ -10,6 +10,7 @@ from typing import TYPE_CHECKING, Any
 
 from retrofit.case.values import is_hidden
 from retrofit.errors import MissingPartError
+from retrofit.report.mark import mark_of
 
 if TYPE_CHECKING:
     from retrofit.report.spreadsheet.table import Column, Content, Sheet
@@ -53,6 +54,7 @@ def render_spreadsheet(comparison: Comparison, units: str = "si", *, made_at: da
     created = made_at.astimezone(UTC).replace(tzinfo=None, microsecond=0) if made_at.tzinfo else made_at
     title = _text(comparison.case.title)[:LONGEST_TITLE]
     book.set_properties({"title": title, "subject": "Refrigerant changeover", "created": created})
+    book.set_custom_property("Made for", mark_of(comparison.case))
     formats = _Formats(book)
     for sheet in _sheets(comparison, units, made_at):
         _write(book.add_worksheet(sheet.name), sheet, formats)

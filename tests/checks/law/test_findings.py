@@ -129,7 +129,7 @@ def test_a_leak_rate_not_stated_is_named(assessed):
 
 
 def test_missing_data_is_unknown_and_never_good(assessed):
-    """Without a charge the verdict cannot be said, for today's refrigerant as for a candidate."""
+    """Without a charge no verdict is in favour, of today's refrigerant or of a candidate."""
     result = assessed(charge=None)
     entry = result.candidates[0]
 
@@ -151,15 +151,16 @@ def test_a_jurisdiction_without_a_table_is_unknown(assessed):
 
 
 @pytest.mark.parametrize("law", [{key: None for key in MARKET}, {"jurisdiction": None}], ids=["none", "no place"])
-def test_without_a_jurisdiction_nothing_is_said(assessed, law):
-    """A case that names no jurisdiction has one finding of law: that it was not checked, and which key is missing."""
+def test_without_a_jurisdiction_law_is_not_checked_and_that_is_decisive(assessed, law):
+    """A case that names no jurisdiction has one finding of law: that it was not checked, and the key."""
     result = assessed(**law)
 
     assert result.law is None
     assert all(entry.law is None for entry in result.entries)
     for entry in result.entries:
         (finding,) = [finding for finding in entry.findings if finding.code.startswith("law")]
-        assert (finding.level, finding.missing) == ("unknown", ("law.jurisdiction",))
+        assert (finding.level, finding.decisive, finding.missing) == ("unknown", True, ("law.jurisdiction",))
+        assert not entry.verdict.is_positive
 
 
 def test_past_its_review_a_table_gives_no_answer(assessed):
@@ -197,16 +198,17 @@ def test_r454a_in_a_new_rack_of_120_kw_is_stopped(solved):
     assert "law-new-equipment" not in new_plant(solved, "R454C")
 
 
-def test_a_new_plant_whose_kind_is_missing_is_unknown_with_its_key(solved):
-    """R454A in a new cold store: self-contained it is barred since 2025, built on site from 2030: the key decides."""
-    unknown = new_plant(solved, "R454A", equipment="cold store")["law-new-equipment"]
-    built = new_plant(solved, "R454A", equipment="cold store", arrangement="built on site")
-    stopped = new_plant(solved, "R454A", equipment="cold store", arrangement="self-contained")
+def test_a_new_plant_whose_arrangement_is_missing_is_unknown_with_its_key(solved):
+    """R454B at 20 kW: self-contained it is barred since 2027-01-01 (8d), as a split from 2033 (9f): the key decides."""
+    given = {"equipment": "air conditioning", "cooling_W": 20e3}
+    unknown = new_plant(solved, "R454B", **given)["law-new-equipment"]
+    stopped = new_plant(solved, "R454B", arrangement="self-contained", **given)["law-new-equipment"]
+    split = new_plant(solved, "R454B", arrangement="multi split", **given)
 
-    assert (unknown.level, unknown.decisive) == ("unknown", True)
-    assert "law.arrangement" in unknown.missing
-    assert "law-new-equipment" not in built or built["law-new-equipment"].missing == ("evaporator.medium",)
-    assert stopped["law-new-equipment"].level in ("stop", "unknown")
+    assert (unknown.level, unknown.decisive, unknown.missing) == ("unknown", True, ("law.arrangement",))
+    assert stopped.level == "stop"
+    assert "law-new-equipment" not in split
+    assert "From 2033-01-01" in split["law-new-later"].fact
 
 
 def test_the_next_limit_is_noted_for_a_change_that_slips(solved):

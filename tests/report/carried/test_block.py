@@ -2,6 +2,7 @@
 
 import base64
 import json
+import time
 import zlib
 from dataclasses import replace
 from pathlib import Path
@@ -12,7 +13,9 @@ from retrofit.errors import ReportError
 from retrofit.report import render_html
 from retrofit.report.carried import read_carried
 from retrofit.report.carried.block import END, START
+from retrofit.report.carried.reader import LARGEST_RESULT_BYTES
 from retrofit.report.carried.result import digest, fingerprint, result_of, rounded
+from retrofit.report.carried.strict import MOST_VALUES
 from retrofit.report.machine import comparison_json
 
 ROOT = Path(__file__).resolve().parents[3]
@@ -247,7 +250,7 @@ def test_a_huge_file_is_refused_unread(tmp_path):
     with path.open("wb") as file:
         file.truncate(10**9)
 
-    with pytest.raises(ReportError, match="larger than 100 MB"):
+    with pytest.raises(ReportError, match="larger than 30 MB"):
         read_carried(path)
 
 
@@ -285,8 +288,87 @@ def test_a_result_that_unpacks_without_end_is_refused(page_of, block_of, written
     """Packed data say how small they are, not how large they become."""
     monkeypatch.setattr("retrofit.report.carried.reader.LARGEST_RESULT_BYTES", 10_000)
 
-    with pytest.raises(ReportError, match="larger than 100 MB"):
+    with pytest.raises(ReportError, match=r"larger than 0\.01 MB"):
         read_carried(written(page_of("harbour-market", "si")))
+
+
+# What no report holds, put where a number stood: digits, depth, size, kind; each with a digest that fits.
+COP = '"cop":'
+NONSENSE = {
+    "beyond floating point": (lambda text: text.replace(COP, '"cop":1e999,"x":', 1), "too large"),
+    "large": (lambda text: text.replace(COP, '"cop":1e31,"x":', 1), "too large"),
+    "4000 digits": (lambda text: text.replace(COP, f'"cop":{"9" * 4000},"x":', 1), "4000 digits"),
+    "5000 digits": (lambda text: text.replace(COP, f'"cop":-{"9" * 5000},"x":', 1), "5001 digits"),
+    "lists in lists": (lambda text: text.replace(COP, f'"cop":{"[" * 500}{"]" * 500},"x":', 1), "nested"),
+    "objects in objects": (
+        lambda text: text.replace(COP, '"cop":' + '{"a":' * 900 + "1" + "}" * 900 + ',"x":', 1),
+        "nested",
+    ),
+    "deeper than the reader goes": (lambda text: text[:-1] + f',"x":{"[" * 100_000}{"]" * 100_000}}}', "nested"),
+    "a long list": (lambda text: text[:-1] + ',"x":[' + "1," * 600_000 + "1]}", "more than 500000 values"),
+    "a huge list": (lambda text: text[:-1] + ',"x":[' + "1," * 30_000_000 + "1]}", "larger than 10 MB"),
+    "no number": (lambda text: text.replace(COP, '"cop":Infinity,"x":', 1), "no number"),
+    "a key twice": (lambda text: text[:-1] + ',"existing":5}', "a key twice"),
+    "true draws": (
+        lambda text: text[:-1] + ',"remaining_life":{"draws":{"number":true,"seed":true}}}',
+        "remaining_life.draws.number is missing or of the wrong kind",
+    ),
+    "too many draws": (
+        lambda text: text[:-1] + ',"remaining_life":{"draws":{"number":20001,"seed":1}}}',
+        "remaining_life.draws.number",
+    ),
+    "a negative seed": (
+        lambda text: text[:-1] + ',"remaining_life":{"draws":{"number":9,"seed":-1}}}',
+        "remaining_life.draws.seed",
+    ),
+    "no refrigerant": (lambda text: text.replace('"existing":', '"existing":[],"x":', 1), "existing is missing"),
+    "letters beyond ASCII": (lambda text: text[:-1] + ',"x":"\xe9"}', "no JSON in ASCII"),
+}
+
+
+@pytest.mark.parametrize(("change", "why"), NONSENSE.values(), ids=NONSENSE)
+def test_a_result_that_no_report_holds_is_refused_before_anything_is_computed(change, why, page_of, block_of, written):
+    """In a moment, and in a sentence."""
+    html = page_of("harbour-market", "si")
+    data = block_of(html)
+    text = zlib.decompress(base64.b64decode("".join(data["result"]))).decode()
+    data["result"] = _packed(zlib.compress(change(text).encode(), 1))
+    path = written(html[: html.rindex(START)] + START + json.dumps(data) + html[html.rindex(END) :])
+    begun = time.perf_counter()
+
+    with pytest.raises(ReportError, match=why) as found:
+        read_carried(path)
+    assert time.perf_counter() - begun < 5.0  # it took a minute to read a huge list; a second is usual here
+    assert len(found.value.message) < 600
+
+
+@pytest.mark.parametrize(
+    ("more", "why"),
+    [
+        (f'"x":{"9" * 4000}', "4000 digits"),
+        ('"x":1e999', "too large"),
+        (f'"x":{"[" * 900}{"]" * 900}', "nested"),
+        ('"format":"retrofit.carried/1"', "a key twice"),
+        (f'"x":[{"1," * 600_000}1]', "values"),
+        ('"case":{"name":"' + "n" * 300 + '","text":""}', "a key twice"),
+    ],
+)
+def test_a_block_that_no_report_holds_is_refused(more, why, page_of, written):
+    """The data around the result are held to the same bounds."""
+    html = page_of("harbour-market", "si")
+    end = html.rindex("}", 0, html.rindex(END))
+
+    with pytest.raises(ReportError, match=why):
+        read_carried(written(f"{html[:end]},{more}{html[end:]}"))
+
+
+def test_a_whole_report_is_far_from_every_bound(page_of, block_of):
+    """Seven refrigerants; a case may have forty-one, and then with its remaining life."""
+    data = block_of(page_of("harbour-market", "si"))
+    text = zlib.decompress(base64.b64decode("".join(data["result"])))
+
+    assert len(text) < LARGEST_RESULT_BYTES / 20
+    assert text.count(b",") < MOST_VALUES / 20
 
 
 @pytest.mark.parametrize(
