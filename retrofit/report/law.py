@@ -78,6 +78,15 @@ class LawLine:
 
 
 @dataclass(frozen=True)
+class LawOutlook:
+    """What may come for one refrigerant: parts that a proposal would restrict, and parts that turn into TFA."""
+
+    name: str
+    restricted: str
+    turns_into_tfa: str
+
+
+@dataclass(frozen=True)
 class Reading:
     """What a row of law says to some refrigerants.
 
@@ -121,6 +130,7 @@ class LawPart:
         not_checked: That no table holds for the jurisdiction of the case; empty if one does.
         not_held: Fields of law that no table holds.
         lines: One for each refrigerant.
+        outlook: What may come, a line for each refrigerant that it concerns; never law in force.
         subjects: The rows by subject.
         timeline: What begins and ends, as (day, what, for whom).
         tables: The tables looked into, as (title, file, rows, verified, read, review by, remark).
@@ -132,6 +142,7 @@ class LawPart:
     not_checked: str
     not_held: tuple[str, ...]
     lines: tuple[LawLine, ...]
+    outlook: tuple[LawOutlook, ...]
     subjects: tuple[tuple[str, tuple[LawItem, ...]], ...]
     timeline: tuple[tuple[str, str, str], ...]
     tables: tuple[tuple[str, ...], ...]
@@ -154,6 +165,7 @@ def law_part(comparison: Comparison, units: UnitSystem) -> LawPart | None:
         not_checked(basis),
         basis.not_held,
         law_lines(comparison, units),
+        outlook(comparison),
         _subjects(comparison),
         timeline(comparison, basis),
         _tables(basis),
@@ -298,6 +310,37 @@ def _jurisdiction(basis: LawBasis) -> str:
 
 def _day(day: datetime.date | None, missing: str) -> str:
     return missing if day is None else day.isoformat()
+
+
+# Outlook
+
+
+def outlook(comparison: Comparison) -> tuple[LawOutlook, ...]:
+    """Return what may come for each refrigerant that a proposal or a finding concerns; none of it is in force.
+
+    Args:
+        comparison: An assessed result.
+    """
+    checks = [(entry, entry.law.rows_on("proposal")) for entry in comparison.entries if entry.law]
+    return tuple(
+        LawOutlook(
+            entry.refrigerant.display_name,
+            _parts(row for row in rows if row.value is None),
+            _parts(row for row in rows if row.value is not None),
+        )
+        for entry, rows in checks
+        if rows
+    )
+
+
+def _parts(rows: Iterable[LawRow]) -> str:
+    """Return the components that rows name, with their share by mass and what the row gives for each."""
+    found = []
+    for row in rows:
+        given = "" if row.value is None else f" ({row.value:g} {row.unit})"
+        shares = [item for item in row.measured if item.measure == "share" and item.value]
+        found += [spelled(f"{number_text(item)}{given}") for item in shares]
+    return "; ".join(found) or "none in these tables"
 
 
 # Rows

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from retrofit.report.law import NOTHING_HELD, LawCell, Mark, law_lines
+from retrofit.report.law import NOTHING_HELD, LawCell, Mark, law_lines, outlook
 from retrofit.report.room import charge_of_text, code_text, condition_lines, has_room, room_lines
 from retrofit.report.terminal_plant import Emphasis, row_names
 from retrofit.report.text_table import Column, paragraph, text_table
@@ -74,7 +74,7 @@ def law_text(comparison: Comparison, units: UnitSystem, columns: int, strong: Em
     basis = comparison.law
     if basis is None:
         return ""
-    heading = strong(f"Law: what the tables for {basis.jurisdiction} ask, today and from the day of the change")
+    heading = strong(f"Law: duties and bans by the tables for {basis.jurisdiction}, today and from the date of change")
     entries = [entry for entry in comparison.entries if entry.law is not None]
     table = [_law_table(comparison, entries, units)] if entries else []
     said = [*map(_marks_used, table), *_remarks(comparison, basis)]
@@ -121,6 +121,9 @@ def _remarks(comparison: Comparison, basis: LawBasis) -> list[str]:
     reasons = dict.fromkeys(reason for entry in comparison.entries if entry.law for reason in entry.law.unknown)
     if reasons:
         found.append(f"{UNKNOWN.capitalize()}: {'; '.join(map(reason_text, reasons))}.")
+    touched = [item.name for item in outlook(comparison)]
+    if touched:
+        found.append(f"Outlook, not law: PFAS proposal or TFA concern {', '.join(touched)}; see the report.")
     found += [f"{problem}." for problem in problems(basis)]
     if basis.tables:
         checked = "; ".join(f"{table.file}, read {table.checked}" for table in basis.tables)

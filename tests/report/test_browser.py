@@ -17,7 +17,7 @@ pytestmark = pytest.mark.browser
 SHOWN = ["harbour-market", "freezer-store", "coast-heat-pump"]
 HEADINGS = [
     "Summary", "Options considered, and what is rejected", "Cautions by safety class", "The plant as found",
-    "What the law asks, and when", "Comparison on three bases", "Charts", "Hardware, component by component",
+    "Law: duties, bans and dates", "Comparison on three bases", "Charts", "Hardware, component by component",
     "Charge against the room", "Method statement and way back", "Assumptions", "Limits: what was not checked",
     "Sign-off and revisions",
     "Findings and verdict for each refrigerant", "Readings: what could not be derived", "Components, one by one",

@@ -269,7 +269,7 @@ GOLDEN = """\
 
 
 def test_the_line_of_time_of_the_harbour_market(page_of, read_page):
-    """Read by hand from Art. 13(3) and (5) and annex VII of Regulation (EU) 2024/573: nothing ends, all steps are there."""
+    """Read by hand from Art. 13(3) and (5) and annex VII of Regulation (EU) 2024/573: nothing ends."""
     rows = read_page(page_of("harbour-market", "si")).tables["t-law-time"][1:]
     shown = sorted({f"{row[0]} {row[1]}" for row in rows})
 

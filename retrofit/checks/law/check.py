@@ -27,6 +27,7 @@ from retrofit.study.law import (
 )
 
 NEW = "new equipment"
+FOR_NEW = (NEW, "new equipment duty")  # subjects that only a new plant meets
 _DAYS_PER_YEAR = 365.25
 Days = tuple[datetime.date, datetime.date | None, datetime.date]  # start, end, and the day the tables are read
 
@@ -124,7 +125,7 @@ def law_for(
         raise ValueError("the case names no jurisdiction; give jurisdiction in [law]")
     plant = Plant.of(case, law, refrigerant, charge_kg, heat_W)
     end = end_of_life(law, on)
-    asked = ((table, row) for table in tables for row in table.rows if is_new_plant or row.subject != NEW)
+    asked = ((table, row) for table in tables for row in table.rows if is_new_plant or row.subject not in FOR_NEW)
     read = _rows(plant, asked, (on, end, read_on or on))
     rows = tuple(sorted(read, key=lambda row: (SUBJECTS.index(row.subject), _first(row))))
     bases = sorted({row.gwp_basis for row in rows} - {"none"})

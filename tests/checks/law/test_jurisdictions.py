@@ -1,14 +1,16 @@
 """The same plant in each jurisdiction: what its own tables say, and nothing of another's.
 
 260 kg of R404A in a supermarket rack of 120 kW, and new plants in its place, changed on 2027-04-01. Great Britain: the
-guidance of its environment agencies on Regulation (EU) 517/2014 as retained (leak checks at 5, 50 and 500 t CO2e, doubled
-by detection; refill ban from 40 t at GWP 2500, R404A from 10.2 kg, reclaimed gas to 2030). GWP of R404A 3922 (AR4).
+guidance of its environment agencies on Regulation (EU) 517/2014 as retained (leak checks at 5, 50 and 500 t CO2e,
+doubled by detection; refill ban from 40 t at GWP 2500, R404A from 10.2 kg, reclaimed gas to 2030). GWP of R404A by AR4:
+0.44 x 3500 + 0.52 x 4470 + 0.04 x 1430 = 3921.6.
 """
 
 import pytest
 
 from retrofit.study.law import RowState
 
+PLACES = ("EU", "NI", "GB", "US")
 KEPT = {"is_new_plant": False, "remaining_life": None, "date_of_change": None}
 
 
@@ -19,7 +21,7 @@ def ids(rows):
 
 @pytest.mark.parametrize("jurisdiction", ["EU", "DE", "FR", "NI"])
 def test_the_eu_its_members_and_northern_ireland_read_the_same_rows(law_of, jurisdiction):
-    """Regulation (EU) 2024/573 holds in each; R404A is banned for service since 2025, R454A for new racks since 2022."""
+    """Regulation (EU) 2024/573 holds in each; R404A is banned for service since 2025, R454A in new racks since 2022."""
     kept = law_of("R404A", 260.0, jurisdiction=jurisdiction, is_new_plant=False)
 
     assert kept.rows
@@ -31,9 +33,18 @@ def test_the_eu_its_members_and_northern_ireland_read_the_same_rows(law_of, juri
 
 @pytest.mark.parametrize(
     ("kg", "detection", "months"),
-    [(1.27, False, None), (1.28, False, 12), (12.7, False, 12), (12.8, False, 6), (127.4, False, 6), (127.5, False, 3)]
-    + [(1.28, True, 24), (12.8, True, 12), (127.5, True, 6)],
-)  # fmt: skip
+    [
+        (1.27, False, None),
+        (1.28, False, 12),
+        (12.7, False, 12),
+        (12.8, False, 6),
+        (127.4, False, 6),
+        (127.5, False, 3),
+        (1.28, True, 24),
+        (12.8, True, 12),
+        (127.5, True, 6),
+    ],
+)
 def test_leak_checks_in_great_britain(law_of, kg, detection, months):
     """5, 50 and 500 t CO2e of R404A are 1.275, 12.75 and 127.5 kg."""
     check = law_of("R404A", kg, jurisdiction="GB", leak_detection_system=detection)
@@ -45,7 +56,7 @@ def test_leak_checks_in_great_britain(law_of, kg, detection, months):
 @pytest.mark.parametrize(("t_co2e", "months"), [(9.99, None), (10.0, 12)])
 def test_sealed_equipment_in_great_britain(law_of, t_co2e, months):
     """Sealed and labelled: no check under 10 t CO2e; there is no rule of 3 kg for homes."""
-    check = law_of("R404A", t_co2e * 1000 / 3922, jurisdiction="GB", hermetically_sealed=True, equipment="heat pump")
+    check = law_of("R404A", t_co2e * 1000 / 3921.6, jurisdiction="GB", hermetically_sealed=True, equipment="heat pump")
 
     assert check.leak_check_months == months
 
@@ -85,11 +96,9 @@ def test_what_is_from_summaries_in_great_britain_is_not_verified(law_of):
 
 def test_the_outlook_on_pfas_is_of_the_eu(law_of):
     """The proposal is for REACH, which holds in the EU and Northern Ireland, not in Great Britain or the US."""
-    found = {
-        place: bool(law_of("R1234yf", 5.0, jurisdiction=place).rows_on("proposal")) for place in ("EU", "NI", "GB")
-    }
+    found = [place for place in PLACES if law_of("R1234yf", 5.0, jurisdiction=place).rows_on("proposal")]
 
-    assert found == {"EU": True, "NI": True, "GB": False}
+    assert found == ["EU", "NI"]
 
 
 @pytest.mark.parametrize(("jurisdiction", "has_sale_ban"), [("US", False), ("US-CA", True)])
