@@ -7,6 +7,7 @@ from typing import Annotated
 from pydantic import Field
 
 from retrofit.case.compressor import CURRENT, PHASES, POWER_FACTOR, VOLTAGE
+from retrofit.case.dates import YesNo
 from retrofit.case.exchangers import FLOW, SPECIFIC_HEAT
 from retrofit.case.table import Items, Table, key
 from retrofit.case.values import PRESSURE_LIMIT, AbsolutePressure, Quantity, Text
@@ -69,6 +70,11 @@ class Readings(Table):
     )
     condenser_specific_heat_J_per_kgK: Annotated[float | None, SPECIFIC_HEAT] = key(
         "condenser_specific_heat", "Specific heat of what flows through the condenser.", None
+    )
+    calibrate: Annotated[bool | None, YesNo()] = key(
+        "calibrate",
+        "Whether power read over modelled power is taken as losses of motor and drive, alike for every option.",
+        None,
     )
     hours_per_day: Annotated[float | None, Quantity("hours per day", "0", "24", "a day has no more")] = key(
         "hours_per_day", "Hours that the compressors run in a day.", None

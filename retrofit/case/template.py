@@ -108,6 +108,7 @@ match = "mean"                   # refrigerants are compared at equal mean (or d
 # voltage = "400 V"
 # phases = 3
 # power_factor = 0.85
+# calibrate = true               # take power read over modelled power as losses of motor and drive, for every option
 # evaporator_in = "2 degC"       # air, water or brine
 # evaporator_out = "-3 degC"
 # evaporator_flow = "8 kg/s"

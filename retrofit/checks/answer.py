@@ -6,10 +6,12 @@ from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 
 from retrofit.checks.gates import capacity_needed_W
+from retrofit.checks.reading_words import contradiction_words, duty_words
+from retrofit.checks.readings import Duty, duty_held
 from retrofit.refrigerants import change_cautions
 from retrofit.study import Comparison, Entry, Family, Finding, Verdict
 from retrofit.study.bands import groups_alike, on_the_plant, pair_band
-from retrofit.units import UnitSystem, listed
+from retrofit.units import UnitSystem, listed, told
 
 # In the order of the headline: what may be done comes before what may not.
 VERDICT_WORDS = {
@@ -50,12 +52,16 @@ class Answer:
         headline: The answer in one sentence.
         matters: What stands behind it: capacity, discharge temperature, pressure, COP, which candidates are alike.
         remarks: Sentences on safety classes and on what could not be computed.
+        duty: What of the headline is on a duty that is not what the plant can give; empty if it is.
+        contradictions: Sentences on what the readings say against the model, and what is calibrated by them.
     """
 
     question: str
     headline: str
     matters: tuple[Matter, ...]
     remarks: tuple[str, ...]
+    duty: str = ""
+    contradictions: tuple[str, ...] = ()
 
     @property
     def sentences(self) -> tuple[str, ...]:
@@ -83,7 +89,14 @@ def answer(comparison: Comparison, units: UnitSystem) -> Answer:
         for entry in comparison.candidates
         if entry.duty is None
     ]
-    return Answer(question, _headline(comparison), matters, (*_class(comparison), *missing))
+    return Answer(
+        question,
+        " ".join(filter(None, (duty := told(duty_words(comparison), units), _headline(comparison)))),
+        matters,
+        (*_class(comparison), *missing),
+        duty,
+        contradiction_words(comparison, units),
+    )
 
 
 def question_of(comparison: Comparison) -> str:
@@ -183,6 +196,8 @@ def _capacity(comparison: Comparison, solved: Sequence[Entry]) -> Matter:
     old, needed = comparison.existing.refrigerant.designation, capacity_needed_W(comparison)
     held = Held(comparison, solved, "capacity")
     band, within = held.band, f"{held.narrowest:.0%}"
+    # What is needed is at most what the plant gives: a duty beyond that is not met by a candidate that gives as much.
+    measure = "today's plant gives" if duty_held(comparison).state == Duty.ABOVE else "needed"
     is_mixed = len({entry.plant is None for entry in solved}) > 1
 
     def share(entry: Entry) -> float:
@@ -197,9 +212,12 @@ def _capacity(comparison: Comparison, solved: Sequence[Entry]) -> Matter:
         return _percent(entry.relative[name]) + basis + held.own(entry)
 
     groups = (
-        (lambda e: share(e) >= 1.0 + band(e), f"more than needed, beyond the ±{within} of the model"),
-        (lambda e: 1.0 - band(e) < share(e) < 1.0 + band(e), f"as much as needed, within the ±{within} of the model"),
-        (lambda e: share(e) <= 1.0 - band(e), f"less than needed, beyond the ±{within} of the model"),
+        (lambda e: share(e) >= 1.0 + band(e), f"more than {measure}, beyond the ±{within} of the model"),
+        (
+            lambda e: 1.0 - band(e) < share(e) < 1.0 + band(e),
+            f"as much as {measure}, within the ±{within} of the model",
+        ),
+        (lambda e: share(e) <= 1.0 - band(e), f"less than {measure}, beyond the ±{within} of the model"),
     )
     basis = (
         "Cooling with the existing compressor"
@@ -233,6 +251,8 @@ def _installed(comparison: Comparison, solved: Sequence[Entry], units: UnitSyste
         (lambda e: lacks(e) < 0.0, "not computed on this basis"),
     )
     delivered = units.with_unit("cooling", needed)
+    if duty_held(comparison).state == Duty.ABOVE:
+        delivered = f"{delivered}, all that today's plant gives,"
     about = f"The plant as installed, {delivered} to deliver; COP against today at the same cooling"
     return Matter(about, _grouped(solved, groups, lambda entry: _running(comparison, entry)))
 

@@ -16,9 +16,10 @@ _CYCLE = ("duty.reading", "compare.match")
 _SUPERHEATS = ("duty.useful_superheat", "duty.line_superheat")
 _EFFECTS = (*_CYCLE, *_SUPERHEATS, "duty.subcooling")
 _MACHINE = ("compressor.isentropic_efficiency", "compressor.volumetric_efficiency", "compressor.heat_loss")
+_DRIVE = ("compressor.motor_efficiency",)  # from readings, or not there
 _EXCHANGERS = tuple(f"{way}.{key}" for way in ("evaporator", "condenser") for key in ("film_factor", "pressure_drop"))
 _PLANT = (*_EFFECTS, *_MACHINE, *_EXCHANGERS, "evaporator.specific_heat", "condenser.specific_heat")
-_ALL = (*_PLANT, "year", "emissions", "money", "options")
+_ALL = (*_PLANT, *_DRIVE, "year", "emissions", "money", "options")
 _GWP = ("emissions.gwp_edition",)
 # Defaults that the rows of a group of the comparison rest on, by the name of the group; a table of the case stands for
 # all of its keys.
@@ -32,8 +33,8 @@ GROUPS = {
     "plant-full": _PLANT,
     "plant-run": _PLANT,
     "settings": _CYCLE,
-    "year": (*_PLANT, "year"),
-    "parts": (*_PLANT, "year"),
+    "year": (*_PLANT, *_DRIVE, "year"),
+    "parts": (*_PLANT, *_DRIVE, "year"),
     "charge": (),
     "tewi": (),
     "yearly": ("money",),
@@ -53,10 +54,11 @@ ROWS = {
     "lost at the end": (*_GWP, "emissions.recovery_at_end"),
     "lost at the change": (*_GWP, "emissions.lost_at_change", "emissions.old_charge"),
     "Direct, all": ("emissions",),
-    "Indirect, all": (*_PLANT, "year", "emissions"),
+    "Electrical power": _DRIVE,
+    "Indirect, all": (*_PLANT, *_DRIVE, "year", "emissions"),
     "Sum": _ALL,
-    "Energy": (*_PLANT, "year"),
-    "Demand charge": (*_PLANT, "year"),
+    "Energy": (*_PLANT, *_DRIVE, "year"),
+    "Demand charge": (*_PLANT, *_DRIVE, "year"),
     "Saving against": _ALL,
     "Simple payback": _ALL,
     "Cost against": _ALL,

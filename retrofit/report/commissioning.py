@@ -229,7 +229,7 @@ def _windows(job: Job) -> Windows:
         ("Discharge (condensing)", "gauge pressure", "p_cond_Pa", lambda w: gauge(w, 1)),
         ("Discharge line", "temperature", "T_discharge_K", lambda w: _shown(job, "temperature", w, 0)),
         ("Current", "current", "current_A", lambda w: _shown(job, "current", w, _decimals(w))),
-        ("Compressor power", "power", "power_W", lambda w: _shown(job, "power", w, _decimals(w, 1000.0))),
+        ("Electrical power", "power", "power_W", lambda w: _shown(job, "power", w, _decimals(w, 1000.0))),
     )
     rows = tuple(
         (name, units.label(kind), tuple(_cell(getattr(item, field), show) for item in changing.expected))

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
+from retrofit.report.agreeing import Agreement, agreements
 from retrofit.report.judging import LEVEL_WORDS, source_title, spelled
 from retrofit.study import Comparison, Derived, Finding
 from retrofit.units import UnitSystem
@@ -22,12 +23,18 @@ class Problem:
 
 @dataclass(frozen=True)
 class AsFound:
-    """The plant as found: quantities as (name, value, made from), problems, and what could not be derived."""
+    """The plant as found: quantities as (name, value, made from), problems, what is missing, and the model."""
 
     date: str
     quantities: tuple[tuple[str, str, str], ...]
     problems: tuple[Problem, ...]
     missing: tuple[str, ...]
+    agreements: tuple[Agreement, ...]
+
+    @property
+    def is_contradicted(self) -> bool:
+        """Return whether anything in the readings does not go together with the rest. [-]"""
+        return bool(self.problems) or any(item.is_apart for item in self.agreements)
 
 
 def as_found(comparison: Comparison, units: UnitSystem) -> AsFound | None:
@@ -45,6 +52,7 @@ def as_found(comparison: Comparison, units: UnitSystem) -> AsFound | None:
         tuple((item.name, derived_text(item, units), item.made_from) for item in found.derived),
         tuple(_problem(finding) for finding in found.problems),
         tuple(spelled(text) for text in found.missing),
+        agreements(comparison, units),
     )
 
 

@@ -11,6 +11,7 @@ from typing import Any
 
 from retrofit.properties import Grade
 from retrofit.refrigerants import GWP_BASES, Refrigerant
+from retrofit.report.machine_agreement import agreement_json
 from retrofit.study import Baseline, Comparison, Component, Entry, Finding, Installed, Performance, Point
 from retrofit.study.bands import bands_of
 from retrofit.study.compare import RATIOS
@@ -62,6 +63,7 @@ def comparison_json(comparison: Comparison) -> dict[str, Any]:
         "candidates": [_entry(entry) for entry in comparison.candidates],
         "defaults": [asdict(default) for default in case.defaults],
         "baseline": _baseline(comparison.baseline),
+        **agreement_json(comparison),
         "law": _law_basis(comparison.law),
     }
     return all_told(found, SI)
@@ -159,7 +161,8 @@ def _plant(found: Installed | None) -> dict[str, Any] | None:
         return None
     return asdict(found.full) | {
         "same_cooling": asdict(found.same_cooling),
-        "operation": asdict(found.operation),
+        "operation": asdict(found.operation) | {"mean_electric_W": found.mean_electric_W},
+        "electric_W": found.electric_W,
         "is_covered": found.is_covered,
         "film_factors": list(found.film_factors),
         "cooling_with_equal_films_W": found.cooling_with_equal_films_W,

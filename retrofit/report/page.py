@@ -12,6 +12,7 @@ from retrofit import figures
 from retrofit.case import Case
 from retrofit.checks import answer, not_checked
 from retrofit.checks.changeover import chosen_for_cards
+from retrofit.report.agreeing import calibration_text
 from retrofit.report.assumed import section_legends
 from retrofit.report.banding import band_text
 from retrofit.report.cautioning import DEFERENCE, CautionGroup, caution_groups
@@ -52,6 +53,8 @@ class Answered:
     headline: str
     matters: tuple[tuple[str, tuple[tuple[str, tuple[str, ...]], ...]], ...]
     remarks: tuple[str, ...]
+    duty: str = ""
+    contradictions: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True)
@@ -96,6 +99,7 @@ class Page:
     deference: str
     cautions: tuple[CautionGroup, ...]
     found: AsFound | None
+    calibration: str
     comparison: Table
     plant_notes: tuple[str, ...]
     environment: Table
@@ -163,6 +167,7 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
         deference=DEFERENCE,
         cautions=caution_groups(comparison),
         found=as_found(comparison, units),
+        calibration=calibration_text(comparison, units),
         comparison=comparison_table(comparison, units),
         plant_notes=(WHY_SAME_COOLING,) if has_plant(comparison) else (),
         environment=environment_table(comparison, units),
@@ -207,7 +212,14 @@ def answered(comparison: Comparison, units: UnitSystem) -> Answered:
         for matter in found.matters
     )
     remarks = tuple(spelled(remark[:1].upper() + remark[1:]) for remark in found.remarks)
-    return Answered(spelled(found.question), spelled(found.headline), matters, remarks)
+    return Answered(
+        spelled(found.question),
+        spelled(found.headline),
+        matters,
+        remarks,
+        spelled(found.duty),
+        tuple(map(spelled, found.contradictions)),
+    )
 
 
 def facts(comparison: Comparison, units: UnitSystem) -> tuple[tuple[str, str], ...]:

@@ -111,6 +111,7 @@ def _full(comparison: Comparison, units: UnitSystem) -> tuple[Row, ...]:
         quantity_row("Cooling at full", "cooling", _values(comparison, "full.cooling_W"), units),
         change_row("Cooling against today", comparison, "plant_capacity", "capacity"),
         quantity_row("Compressor power at full", "power", _values(comparison, "full.power_W"), units),
+        *_electric_rows(comparison, units, "Electrical power at full", "electric_W"),
         change_row("Power against today", comparison, "plant_power", "capacity"),
         quantity_row("COP at full", "ratio", _values(comparison, "full.cop"), units),
         change_row("COP at full against today", comparison, "plant_cop", "cop"),
@@ -118,6 +119,13 @@ def _full(comparison: Comparison, units: UnitSystem) -> tuple[Row, ...]:
         change_row("COP at the same cooling against today", comparison, "plant_cop_same_cooling", "cop"),
         *_film_rows(comparison),
     )
+
+
+def _electric_rows(comparison: Comparison, units: UnitSystem, label: str, name: str) -> tuple[Row, ...]:
+    """Return the row of an electrical power, if losses of motor and drive are known: else it is the power above."""
+    if comparison.case.compressor.motor_efficiency is None:
+        return ()
+    return (quantity_row(label, "power", _values(comparison, name), units),)
 
 
 def _film_rows(comparison: Comparison) -> tuple[Row, ...]:
@@ -165,6 +173,7 @@ def _run(comparison: Comparison, units: UnitSystem, notes: Notes) -> tuple[Row, 
         quantity_row("Running, share of the time", "fraction", operation("run_time_fraction"), units),
         *speed_rows(comparison, units, operation("speed_fraction")),
         quantity_row("Compressor power, mean over the time", "power", operation("mean_power_W"), units),
+        *_electric_rows(comparison, units, "Electrical power, mean over the time", "mean_electric_W"),
         change_row("Mean power against today", comparison, "plant_mean_power", "capacity"),
         Row("Cooling it lacks though it runs all the time", units.label("cooling"), _unmet_cells(comparison, units)),
     ]

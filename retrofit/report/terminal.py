@@ -66,6 +66,8 @@ def _head(comparison: Comparison, units: UnitSystem, columns: int, strong: Empha
 
 def _answer(found: Answer, columns: int) -> str:
     lines = [paragraph(found.headline, columns)]
+    if found.contradictions:
+        lines += ["", *(paragraph(text, columns) for text in found.contradictions)]
     for matter in found.matters:
         lines.append("")
         lines.append(paragraph(matter.about, columns))

@@ -4,6 +4,8 @@ from __future__ import annotations
 
 from collections.abc import Callable, Sequence
 
+from retrofit.checks.readings import Outcome
+from retrofit.report.agreeing import agreements
 from retrofit.report.found import derived_text
 from retrofit.report.hardware import component_names, verdict_words
 from retrofit.report.plant import cooling_needed_text, has_plant, plant_reason, unmet_text
@@ -153,7 +155,31 @@ def baseline_text(comparison: Comparison, units: UnitSystem, columns: int, stron
         paragraph(f"{item.level:<9}{item.title}. {told(item.text, units)}", columns, indent=" " * 9, first="")
         for item in found.problems
     ]
+    lines += _agreement_lines(comparison, units, columns)
     if found.missing:
         count = len(found.missing)
         lines.append(paragraph(f"{count} more quantities need readings that are not there: see the report.", columns))
     return "\n".join(lines)
+
+
+def _agreement_lines(comparison: Comparison, units: UnitSystem, columns: int) -> list[str]:
+    """Return the readings beside the model, and what likely makes those differ that do."""
+    found = agreements(comparison, units)
+    table = text_table(
+        [
+            Column("", "", is_words=True),
+            Column("Read", ""),
+            Column("Model", ""),
+            Column("Difference", ""),
+            Column("Outcome", "", is_words=True),
+        ],
+        [[item.name, item.read, item.modelled, item.difference, item.outcome] for item in found],
+    )
+    lines = ["Readings against the model of today's plant, at the point of the readings:", table] if found else []
+    for item in found:
+        if item.outcome == Outcome.NOT_COMPARABLE:
+            lines.append(paragraph(f"{item.name}, {item.outcome}: {item.reason}.", columns, indent="  "))
+        if item.is_apart:
+            text = "; ".join(f"{cause}: {todo}" for cause, todo in item.causes)
+            lines.append(paragraph(f"{item.name}, likely causes: {text}.", columns, indent="  "))
+    return lines

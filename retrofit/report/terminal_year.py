@@ -30,6 +30,7 @@ from retrofit.checks.prospects import (
     quantile,
 )
 from retrofit.figures.tornado import limits_text
+from retrofit.report.agreeing import calibration_text
 from retrofit.report.certainty import method
 from retrofit.report.emissions import check_months
 from retrofit.report.terminal import cautions_text
@@ -58,6 +59,7 @@ def year_text(comparison: Comparison, units: UnitSystem, columns: int, strong: E
         strong(shown(comparison.case.title, 200)),
         *(_matters(matters, columns) for matters in (words.year, words.emissions, words.money)),
         "\n".join(paragraph(text, columns) for text in (words.absent, words.stopped, words.meter, words.swing) if text),
+        paragraph(calibration_text(comparison, units), columns),
         *cautions_text(comparison, columns, strong),
         _year(comparison, options, units, columns, strong),
         _emissions(comparison, options, units, columns, strong),

@@ -25,10 +25,20 @@ TAKEN_OVER = {
 }
 
 
+def ran_in_part(case: Case) -> bool:
+    """Return whether only a part of the swept volume may have run during the readings. [-]
+
+    Args:
+        case: The case.
+    """
+    load = case.readings.load if case.readings else None
+    return load is not None and load < 1.0 and case.compressor.speed != "fixed"
+
+
 def part_load(book: Ledger, case: Case) -> None:
     """Doubt the swept volume if only a part of it may have run."""
     load = case.readings.load if case.readings else None
-    if load is None or load >= 1.0 or case.compressor.speed == "fixed":
+    if load is None or not ran_in_part(case):
         return
     title = "Readings at part load"
     book.doubts["compressor.swept_volume"] = title

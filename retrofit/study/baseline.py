@@ -36,7 +36,9 @@ STAGES: tuple[Stage, ...] = (
     against_case.written,
 )
 READINGS = {
-    str(field.alias): name for name, field in Readings.model_fields.items() if name not in ("date", "load", "ambient_K")
+    str(field.alias): name
+    for name, field in Readings.model_fields.items()
+    if name not in ("date", "load", "ambient_K", "calibrate")
 }
 MACHINE = {
     "compressor.swept_volume": "swept_volume_m3_per_s",
@@ -66,7 +68,7 @@ def baseline(case: Case, existing: Fluid) -> Baseline | None:
         if book.doubts == known:
             break
     problems = tuple(dict.fromkeys((*book.struck, *book.notes)))
-    return Baseline(book.derived(), problems, book.missing(READINGS | MACHINE))
+    return Baseline(book.derived(), problems, book.missing(READINGS | MACHINE), dict(book.doubts))
 
 
 def _given(case: Case) -> dict[str, float]:
@@ -74,6 +76,18 @@ def _given(case: Case) -> dict[str, float]:
     read = {key: getattr(case.readings, name) for key, name in READINGS.items()}
     machine = {key: getattr(case.compressor, name) for key, name in MACHINE.items()}
     return {key: float(value) for key, value in (read | machine).items() if value is not None}
+
+
+def taken_over(case: Case, found: Baseline | None) -> dict[str, Derived]:
+    """Return what the readings say in place of a default of the case, by the key of the default.
+
+    Args:
+        case: The case, before or after the readings have taken their place.
+        found: How its plant runs today.
+    """
+    derived = {item.code: item for item in found.derived} if found else {}
+    taken = {key: derived[code] for key, code in against_case.TAKEN_OVER.items() if code in derived}
+    return {default.key: taken[default.key] for default in case.defaults if default.key in taken}
 
 
 def case_with_readings(case: Case, found: Baseline | None) -> Case:
@@ -84,9 +98,7 @@ def case_with_readings(case: Case, found: Baseline | None) -> Case:
         found: How its plant runs today.
     Returns: The case; each default that was replaced says from which readings.
     """
-    derived = {item.code: item for item in found.derived} if found else {}
-    taken = {key: derived[code] for key, code in against_case.TAKEN_OVER.items() if code in derived}
-    taken = {default.key: taken[default.key] for default in case.defaults if default.key in taken}
+    taken = taken_over(case, found)
     if not taken:
         return case
     return replace(

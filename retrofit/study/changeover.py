@@ -17,7 +17,7 @@ from retrofit.properties import Fluid, fluid
 from retrofit.study.hardware.numbers import HardwareNumbers
 from retrofit.study.installed import ExistingPlant, machine_at
 from retrofit.study.operating import balanced
-from retrofit.study.performance import as_numbers
+from retrofit.study.performance import as_numbers, electric_W
 from retrofit.study.practice import practice
 from retrofit.study.result import Comparison, Entry, Performance
 from retrofit.study.saturation import saturation_table
@@ -118,7 +118,7 @@ class Expected:
         name: "milder", "design", "hottest" (the hottest day of the case), "hotter" (one taken) or "today".
         T_inlet_K: Temperature of air, water or brine there.
         p_evap_Pa, p_cond_Pa: Pressures, absolute.
-        T_discharge_K, power_W, current_A: At the compressor; a current None if it cannot be told.
+        T_discharge_K, power_W, current_A: At the compressor, the power electrical; a current None if it cannot be told.
         is_held: Whether the control of head pressure holds the condensing pressure up.
         reason: Why nothing is known; empty otherwise.
     """
@@ -315,11 +315,13 @@ def _at_inlets(
             continue
         one = as_numbers(every, place)
         is_held = one.T_cond_dew_K <= held_dew_K + CLOSE_K
-        expected.append(replace(_windows(numbers, bands, name, T_K, one), is_held=is_held))
+        expected.append(replace(_windows(plant.case, numbers, bands, name, T_K, one), is_held=is_held))
     return tuple(expected)
 
 
-def _windows(numbers: HardwareNumbers, bands: Bands, name: str, T_K: float, found: Performance[float]) -> Expected:
+def _windows(
+    case: Case, numbers: HardwareNumbers, bands: Bands, name: str, T_K: float, found: Performance[float]
+) -> Expected:
     """Return what is expected, each number widened by its band."""
     at_design = numbers.current_A.new
     # Motor current goes with power, as everywhere in the hardware.
@@ -330,7 +332,7 @@ def _windows(numbers: HardwareNumbers, bands: Bands, name: str, T_K: float, foun
         p_evap_Pa=_relative(found.p_evap_Pa, bands.pressure),
         p_cond_Pa=_relative(found.p_cond_Pa, bands.pressure),
         T_discharge_K=Window(found.T_discharge_K - bands.T_discharge_K, found.T_discharge_K + bands.T_discharge_K),
-        power_W=_relative(found.power_W, bands.power),
+        power_W=_relative(float(electric_W(case, found.power_W)), bands.power),
         current_A=None if current is None else _relative(current, bands.power),
     )
 

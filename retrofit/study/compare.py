@@ -14,6 +14,7 @@ from retrofit.cycle import state_points
 from retrofit.errors import NoSolutionError, RetrofitError
 from retrofit.properties import Fluid, fluid, grade
 from retrofit.refrigerants import Refrigerant, cautions_for, change_cautions, find
+from retrofit.study.agreement import held_against_model
 from retrofit.study.baseline import baseline, case_with_readings
 from retrofit.study.families import family_of, is_new_plant
 from retrofit.study.hardware import run as hardware
@@ -61,6 +62,7 @@ def compare(case: Case, on_build: OnBuild | None = None) -> Comparison:
     found: Baseline | None = None
     today: Today | None = None
     parts: hardware.Today | None = None
+    behaviour: Fluid | None = None
     try:
         behaviour = fluid(refrigerant.designation, on_build)
         existing = replace(existing, at_rest=at_rest(case, behaviour))
@@ -73,7 +75,7 @@ def compare(case: Case, on_build: OnBuild | None = None) -> Comparison:
     except RetrofitError as error:
         existing = replace(existing, reason=error.message)
     candidates = [_candidate(case, today, parts, find(name), existing, on_build) for name in case.compare.candidates]
-    return Comparison(
+    comparison = Comparison(
         case=case,
         existing=existing,
         candidates=tuple(candidates),
@@ -82,6 +84,7 @@ def compare(case: Case, on_build: OnBuild | None = None) -> Comparison:
         versions={"retrofit": retrofit.__version__, "coolprop": version("CoolProp")},
         baseline=found,
     )
+    return held_against_model(comparison, today, behaviour)
 
 
 def _candidate(

@@ -17,12 +17,12 @@ from retrofit.equipment.balance import balance
 from retrofit.properties import Fluid
 from retrofit.study.installed import USUAL_SUPERHEAT_SHARE
 from retrofit.study.operating import balanced, delivered_W, operating
-from retrofit.study.performance import at_swept_volume, performance
+from retrofit.study.performance import at_swept_volume, electric_W, performance
 from retrofit.study.result import FloatArray, Performance
 from retrofit.study.spread import single
 from retrofit.study.today import Today, today_of, with_numbers
 from retrofit.study.uncertain import EFFICIENCIES, PHYSICAL, WEATHER, Sample, has_curve
-from retrofit.study.year import HOUR_S, YearConditions, YearPlant, electric_W, load_W, or_nothing, together
+from retrofit.study.year import HOUR_S, YearConditions, YearPlant, load_W, or_nothing, together
 
 NODES, FEW_NODES = 8, 5  # of a row's map along its sinks, and along its sources where both vary
 SHARES = np.array([0.1, 0.25, 0.4, 0.6, 0.8, 1.0])  # of what the plant can, at which part load is solved

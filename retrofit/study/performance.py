@@ -5,8 +5,11 @@ from __future__ import annotations
 from dataclasses import fields, replace
 
 import numpy as np
+from numpy.typing import ArrayLike
 
+from retrofit.case import Case
 from retrofit.cycle import Cycle, cycle_temperatures
+from retrofit.equipment.compressor import shaft_and_electric
 from retrofit.study.result import FloatArray, Number, Performance
 
 FLOWS = (
@@ -58,6 +61,17 @@ def performance(cycle: Cycle, cooling_W: FloatArray | float) -> Performance[Floa
         heat_rejected_W=mass_flow * cycle.heat_rejected_J_per_kg,
         line_heat_W=mass_flow * cycle.line_heat_J_per_kg,
     )
+
+
+def electric_W(case: Case, power_W: ArrayLike) -> FloatArray:
+    """Return electrical power of the compressors.
+
+    Args:
+        case: The case; without a motor efficiency its isentropic efficiency counts as that of compressor and motor.
+        power_W: Power by the isentropic efficiency. [W]
+    """
+    motor = case.compressor.motor_efficiency
+    return np.asarray(power_W, dtype=float) if motor is None else shaft_and_electric(power_W, motor)[1]
 
 
 def as_numbers(found: Performance[FloatArray], place: int | tuple[()] = ()) -> Performance[float]:

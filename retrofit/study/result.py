@@ -18,6 +18,7 @@ from retrofit.study.room import RoomCheck
 from retrofit.study.states import Family, Level, RestState, Verdict
 
 if TYPE_CHECKING:
+    from retrofit.study.agreement import Beside, Calibration
     from retrofit.study.life import Life
 
 FloatArray = NDArray[np.float64]
@@ -107,6 +108,8 @@ class Installed:
         residual: Largest relative error of the balance.
         hottest: At full on the hottest day; None if its temperature is not known or the plant does not balance there.
         hottest_reason: Why it does not balance there.
+        electric_W, mean_electric_W: Electrical power at full, and mean over the time, with the losses of motor and
+            drive as far as the case gives them or its readings calibrate them.
     """
 
     full: Performance[float]
@@ -119,6 +122,8 @@ class Installed:
     residual: float
     hottest: Performance[float] | None = None
     hottest_reason: str = ""
+    electric_W: float = float("nan")
+    mean_electric_W: float = float("nan")
 
 
 @dataclass(frozen=True)
@@ -219,11 +224,13 @@ class Baseline:
         derived: Quantities derived from the readings.
         problems: What is wrong or does not fit together in the readings; never silently used.
         missing: What could not be derived, and which reading it would need.
+        in_doubt: Key in [readings] or [compressor] of what is in doubt, and the title of the problem that says so.
     """
 
     derived: tuple[Derived, ...]
     problems: tuple[Finding, ...]
     missing: tuple[str, ...]
+    in_doubt: Mapping[str, str] = field(default_factory=dict)
 
 
 @dataclass(frozen=True)
@@ -390,6 +397,8 @@ class Comparison:
         baseline: How the plant runs today, None if the case has no readings.
         law: Jurisdiction, day and tables behind what is said of law; None if the case names no jurisdiction.
         life: Year, emissions, money and how sure they are; None until asked for.
+        beside: The readings beside the model of today's plant; empty without readings.
+        calibration: Losses of motor and drive taken from the power read; None if the case does not ask for it.
         places: Where a part of a comparison is shown, the place of each refrigerant in the whole; empty for the whole.
     """
 
@@ -402,6 +411,8 @@ class Comparison:
     baseline: Baseline | None = None
     law: LawBasis | None = None
     life: Life | None = None
+    beside: tuple[Beside, ...] = ()
+    calibration: Calibration | None = None
     places: Mapping[str, int] = field(default_factory=dict)
 
     @property

@@ -12,11 +12,11 @@ from retrofit.case import Case, Year
 from retrofit.case.weather import Weather
 from retrofit.cycle import Temperatures, matched_pressures
 from retrofit.equipment.balance import Machine, balance
-from retrofit.equipment.compressor import shaft_and_electric
 from retrofit.errors import NoSolutionError
 from retrofit.properties import Fluid
 from retrofit.study.installed import ExistingPlant, machine_at
 from retrofit.study.operating import balanced, delivered_W, operating
+from retrofit.study.performance import electric_W
 from retrofit.study.result import FloatArray, Operation, Performance
 
 IntArray = NDArray[np.int64]
@@ -423,17 +423,6 @@ def _year_of(
         by_air=_by_air(asked, total, unmet),
         map=plant_map(ready, asked),
     )
-
-
-def electric_W(case: Case, power_W: FloatArray) -> FloatArray:
-    """Return electrical power of the compressors.
-
-    Args:
-        case: The case; without a motor efficiency its isentropic efficiency counts as that of compressor and motor.
-        power_W: Power by the isentropic efficiency. [W]
-    """
-    motor = case.compressor.motor_efficiency
-    return power_W if motor is None else shaft_and_electric(power_W, motor)[1]
 
 
 def _monthly_J(asked: YearConditions, power_W: FloatArray) -> FloatArray | None:

@@ -9,6 +9,7 @@ from pathlib import PurePath
 from retrofit.checks import answer, not_checked
 from retrofit.checks.outlook import outlook
 from retrofit.checks.prospects import life_of_result
+from retrofit.report.agreeing import calibration_text
 from retrofit.report.carried.made_with import versions_of
 from retrofit.report.carried.result import fingerprint
 from retrofit.report.cautioning import DEFERENCE, caution_groups
@@ -59,7 +60,10 @@ def _about(comparison: Comparison, units: UnitSystem, made_at: datetime) -> Iter
     yield "Report", "Refrigerant changeover, comparison of options", case.title, ""
     if case.about:
         yield "Report", "Plant", case.about, ""
-    yield "Report", "Answer", spelled(answer(comparison, units).headline), ""
+    found = answer(comparison, units)
+    yield "Report", "Answer", spelled(found.headline), ""
+    for text in found.contradictions:
+        yield "Report", "Readings against the model", spelled(text), ""
     yield "Report", "Case file", PurePath(case.path).name, ""
     yield "Report", "Made", made_at.isoformat(timespec="minutes"), ""
     yield "Report", "Units", {"si": "metric", "ip": "inch-pound"}[units.name], ""
@@ -92,6 +96,8 @@ def _reading(comparison: Comparison) -> Iterator[Row]:
 def _life(comparison: Comparison, units: UnitSystem) -> Iterator[Row]:
     """Yield the answer of the remaining life, how it was drawn, and what is left out."""
     topic, words, life = "Remaining life", outlook(comparison, units), life_of_result(comparison)
+    if calibrated := calibration_text(comparison, units):
+        yield topic, "Calibration", calibrated, ""
     for text in (*(matter.text for matter in words.matters), words.stopped, words.meter, words.swing, *words.ranking):
         if text:
             yield topic, "Answer", spelled(text), ""

@@ -47,6 +47,11 @@ OPERATION: Mapping[str, tuple[str, str]] = {
     "unmet_W": ("Cooling lacking", "cooling"),
     "mean_power_W": ("Mean compressor power", "power"),
 }
+# With the losses of motor and drive; without a motor efficiency the same as the compressor power.
+ELECTRIC: Mapping[str, tuple[str, str]] = {
+    "electric_W": ("Electrical power", "power"),
+    "mean_electric_W": ("Mean electrical power", "power"),
+}
 # By basis: which ratio of the result stands under which heading. On the same plant a COP is compared at the same
 # cooling only: one that cools less loads its exchangers less, which would look like a better COP.
 RATIOS: Mapping[str, Mapping[str, str]] = {
@@ -132,10 +137,13 @@ def _quantities(found: list[Performance[float] | None], units: UnitSystem) -> tu
 
 
 def _operation(comparison: Comparison, units: UnitSystem) -> tuple[Column, ...]:
-    found = [entry.plant.operation for entry in comparison.entries if entry.plant]
+    plants = [entry.plant for entry in comparison.entries if entry.plant]
     return tuple(
-        quantity_column(heading, kind, [getattr(item, name) for item in found], units)
+        quantity_column(heading, kind, [getattr(plant.operation, name) for plant in plants], units)
         for name, (heading, kind) in OPERATION.items()
+    ) + tuple(
+        quantity_column(heading, kind, [getattr(plant, name) for plant in plants], units)
+        for name, (heading, kind) in ELECTRIC.items()
     )
 
 
@@ -178,6 +186,8 @@ def _row(comparison: Comparison, entry: Entry, basis: str, found: Performance[fl
     if entry.plant and basis == FULL:
         for name, (heading, kind) in OPERATION.items():
             row[heading] = in_units(kind, getattr(entry.plant.operation, name), units)
+        for name, (heading, kind) in ELECTRIC.items():
+            row[heading] = in_units(kind, getattr(entry.plant, name), units)
     return row
 
 
