@@ -7,7 +7,9 @@ from collections.abc import Callable, Sequence
 from dataclasses import dataclass, replace
 
 from retrofit.checks.operating import discharge_limit, limit_of
+from retrofit.checks.reading_words import expected_words
 from retrofit.refrigerants import GWP_BASES, is_flammable
+from retrofit.report.agreeing import calibration_text
 from retrofit.report.jobcard import UNKNOWN, Job, span
 from retrofit.report.judging import spelled
 from retrofit.report.values import potential_text
@@ -15,7 +17,7 @@ from retrofit.study.bands import QUANTITIES, bands_of
 from retrofit.study.changeover import Expected, PressureRow, Window, operating_span, pressure_rows
 from retrofit.study.hardware.settings import SET_POINTS
 from retrofit.study.practice import practice
-from retrofit.units import MISSING, ZERO_C_K
+from retrofit.units import MISSING, ZERO_C_K, told
 
 MOST_ROWS, COLUMNS = 96, 4  # rows of the pressure-temperature table, and how many parts stand side by side
 STEPS = {"si": (1.0, 2.0, 5.0), "ip": (2.0, 4.0, 10.0)}  # in the reader's degrees
@@ -275,7 +277,9 @@ def _window_notes(job: Job, expected: Sequence[Expected]) -> tuple[str, ...]:
     notes += [f"{INLETS[item.name].capitalize()}: {spelled(item.reason)}." for item in expected if item.reason]
     if numbers is not None and numbers.missing.get("current"):
         notes.append(f"Current not computed: {spelled(numbers.missing['current'])}.")
-    return tuple(notes)
+    if calibrated := calibration_text(job.comparison, job.units):
+        notes.append(spelled(calibrated))
+    return (*notes, *(spelled(told(text, job.units)) for text in expected_words(job.comparison)))
 
 
 # -- the pressure-temperature table ------------------------------------------------------------------

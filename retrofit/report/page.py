@@ -167,7 +167,7 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
         deference=DEFERENCE,
         cautions=caution_groups(comparison),
         found=as_found(comparison, units),
-        calibration=calibration_text(comparison, units),
+        calibration=spelled(calibration_text(comparison, units)),
         comparison=comparison_table(comparison, units),
         plant_notes=(WHY_SAME_COOLING,) if has_plant(comparison) else (),
         environment=environment_table(comparison, units),
