@@ -95,7 +95,7 @@ def test_nothing_of_it_is_needed(case):
 
 
 FAULTS = {
-    "a refrigerant not compared": ('recommended = "R290"', "report.recommended", "R290 is not compared here"),
+    "a refrigerant not compared": ('recommended = "R290"', "report.recommended", "R-290 is not compared here"),
     "no refrigerant": ('recommended = "R4040"', "report.recommended", "not in the catalogue"),
     "twice the same": ('recommended = "R448A"\nfallback = "R448A"', "report.fallback", "is what is recommended"),
     "no text": ("client = 7", "report.client", "a text is needed"),
