@@ -9,9 +9,10 @@ from typing import Annotated, Any, NamedTuple
 from pydantic import ConfigDict
 
 from retrofit.case.numbers import Number
-from retrofit.case.table import Table, key
+from retrofit.case.table import Table, WhyDefault, key
 from retrofit.case.values import FileValue, Quantity, Text, designation_of
 from retrofit.errors import QuantityError
+from retrofit.refrigerants import with_hyphens
 from retrofit.units import described, quoted
 
 LARGEST_SUM = 1e12
@@ -34,6 +35,10 @@ class RangeValue(FileValue):
     def sample(self) -> str:
         """Return a sum, as text."""
         return "[900, 1200, 1800]"
+
+    def form(self) -> str:
+        """Return how a sum is written."""
+        return f"1200, or low, base and high: {self.sample()}"
 
     def read(self, value: object, p_ambient_Pa: float | None = None) -> Range:
         """Return the range."""
@@ -65,6 +70,10 @@ class PricesValue(FileValue):
         """Return a table, as text."""
         return "{R448A = [25, 30, 45]}"
 
+    def form(self) -> str:
+        """Return a table, as text."""
+        return self.sample()
+
     def read(self, value: object, p_ambient_Pa: float | None = None) -> tuple[tuple[str, Range], ...]:
         """Return the prices."""
         if not isinstance(value, Mapping):
@@ -73,7 +82,7 @@ class PricesValue(FileValue):
         for name, price in value.items():
             designation = designation_of(name)
             if designation in found:
-                raise QuantityError(f"{designation} is in the table twice; leave one out")
+                raise QuantityError(f"{with_hyphens(designation)} is in the table twice; leave one out")
             try:
                 found[designation] = self.price.read(price)
             except QuantityError as error:
@@ -85,6 +94,11 @@ class PricesValue(FileValue):
         return {"type": "object", "additionalProperties": self.price.json_schema()}
 
 
+PLANT_LIFE = Quantity("years", "0 years", "60 years", "plants last within it", above_low=True, example="15 years")
+PLANT_LIFE_WHY = (
+    "lower end of the 15 to 20 years that EN 15459-1 lists for refrigeration and air-conditioning units (from memory): "
+    "a shorter life grants less residual value"
+)
 _SUM = Annotated[Range | None, RangeValue()]
 _SHARE = Quantity("fraction", "0 %", "100 %", "a share of the first cost", example="10 %")
 
@@ -116,13 +130,34 @@ class Option(Items):
     ] = key("leak_rate", "Share of the charge lost in a year with this option.", None)
     charge_kg: Annotated[
         float | None, Quantity("mass", "0 kg", "1000000 kg", "a plant that runs has one", above_low=True)
-    ] = key("charge", "Charge of the plant with this option.", None)
+    ] = key(
+        "charge",
+        "Charge of the plant with this option.",
+        None,
+        where="maker of the new plant, or an estimate by volume",
+    )
     largest_circuit_kg: Annotated[
         float | None, Quantity("mass", "0 kg", "1000000 kg", "a plant that runs has one", above_low=True)
-    ] = key("largest_circuit", "Charge of the largest circuit of a new plant: what one leak can release.", None)
+    ] = key(
+        "largest_circuit",
+        "Charge of the largest circuit of a new plant: what one leak can release.",
+        None,
+        where="maker of the new plant",
+    )
     seasonal_cop: Annotated[
         float | None, Number(0.2, 30, "seasonal figures of plants lie within it", example="3.1")
     ] = key("seasonal_cop", "Seasonal COP of a new plant, fans and pumps included, from its maker.", None)
+    peak_power_W: Annotated[
+        float | None, Quantity("power", "0 kW", "100 MW", "plants lie within it", above_low=True, example="40 kW")
+    ] = key("peak_power", "Highest electrical power of a new plant, beside its maker's seasonal COP.", None)
+    plant_life_years: Annotated[float | None, PLANT_LIFE] = key(
+        "plant_life", "Years that this new plant lasts, for its residual value; that of [money] if left out.", None
+    )
+    residual_value: _SUM = key(
+        "residual_value",
+        "What this new plant is worth at the end of the remaining life; by straight line over its life if left out.",
+        None,
+    )
 
 
 class Options(Table):
@@ -153,8 +188,13 @@ class Money(Table):
     tariff: _SUM = key("tariff", "Price of a kWh.", None)
     demand_charge: _SUM = key("demand_charge", "Yearly charge for each kW of peak power.", None)
     discount_rate: Annotated[
-        float | None, Quantity("fraction", "0 %", "50 %", "rates lie within it", example="6 %")
-    ] = key("discount_rate", "Discount rate of a year, for the net present value.", None)
+        float,
+        Quantity("fraction", "0 %", "50 %", "rates lie within it", example="6 %"),
+        WhyDefault("nothing is discounted unless the case gives a rate"),
+    ] = key("discount_rate", "Discount rate of a year, for life cost and net present value.", "0 %")
+    new_plant_life_years: Annotated[float, PLANT_LIFE] = key(
+        "new_plant_life", "Years that a new plant lasts, for its residual value by straight line.", "15 years"
+    )
     refrigerant_price: Annotated[tuple[tuple[str, Range], ...] | None, PricesValue()] = key(
         "refrigerant_price", "Price of a kilogram, by refrigerant.", None
     )

@@ -12,7 +12,8 @@ from retrofit.study import Comparison
 
 SERIES = frozenset((
     "year.monthly_J", "year.by_air", "year.map", "emissions.years", "emissions.direct_by_year_kg",
-    "emissions.indirect_by_year_kg", "money.first_cost_items", "money.extra_cost_by_year_currency", "certainty.swings",
+    "emissions.indirect_by_year_kg", "money.first_cost_items", "money.cumulative_saving_by_year_currency",
+    "certainty.swings",
 ))  # fmt: skip
 
 
@@ -30,7 +31,9 @@ def year_csv(comparison: Comparison) -> str:
         entry = entries[option["refrigerant"]]
         cautions = "; ".join(caution.title for caution in entry.cautions)
         safety = {"safety_class": entry.refrigerant.safety_class.value, "cautions": cautions}
+        calibrated = {"calibration": told["calibration"]["text"]} if told["calibration"] else {}
         first = {"refrigerant": option["refrigerant"], "deed": option["deed"], **safety, "currency": told["currency"]}
+        first |= calibrated
         lines.append(dict(_cells(first | option)))
     text = io.StringIO()
     writer = csv.DictWriter(text, fieldnames=_names(lines), extrasaction="ignore", lineterminator="\n")
