@@ -9,7 +9,7 @@ from typing import Annotated, Any, NamedTuple
 from pydantic import ConfigDict
 
 from retrofit.case.numbers import Number
-from retrofit.case.table import Table, key
+from retrofit.case.table import Table, WhyDefault, key
 from retrofit.case.values import FileValue, Quantity, Text, designation_of
 from retrofit.errors import QuantityError
 from retrofit.units import described, quoted
@@ -85,6 +85,11 @@ class PricesValue(FileValue):
         return {"type": "object", "additionalProperties": self.price.json_schema()}
 
 
+PLANT_LIFE = Quantity("years", "0 years", "60 years", "plants last within it", above_low=True, example="15 years")
+PLANT_LIFE_WHY = (
+    "lower end of the 15 to 20 years that EN 15459-1 lists for refrigeration and air-conditioning units (from memory): "
+    "a shorter life grants less residual value"
+)
 _SUM = Annotated[Range | None, RangeValue()]
 _SHARE = Quantity("fraction", "0 %", "100 %", "a share of the first cost", example="10 %")
 
@@ -123,6 +128,17 @@ class Option(Items):
     seasonal_cop: Annotated[
         float | None, Number(0.2, 30, "seasonal figures of plants lie within it", example="3.1")
     ] = key("seasonal_cop", "Seasonal COP of a new plant, fans and pumps included, from its maker.", None)
+    peak_power_W: Annotated[
+        float | None, Quantity("power", "0 kW", "100 MW", "plants lie within it", above_low=True, example="40 kW")
+    ] = key("peak_power", "Highest electrical power of a new plant, beside its maker's seasonal COP.", None)
+    plant_life_years: Annotated[float | None, PLANT_LIFE] = key(
+        "plant_life", "Years that this new plant lasts, for its residual value; that of [money] if left out.", None
+    )
+    residual_value: _SUM = key(
+        "residual_value",
+        "What this new plant is worth at the end of the remaining life; by straight line over its life if left out.",
+        None,
+    )
 
 
 class Options(Table):
@@ -153,8 +169,13 @@ class Money(Table):
     tariff: _SUM = key("tariff", "Price of a kWh.", None)
     demand_charge: _SUM = key("demand_charge", "Yearly charge for each kW of peak power.", None)
     discount_rate: Annotated[
-        float | None, Quantity("fraction", "0 %", "50 %", "rates lie within it", example="6 %")
-    ] = key("discount_rate", "Discount rate of a year, for the net present value.", None)
+        float,
+        Quantity("fraction", "0 %", "50 %", "rates lie within it", example="6 %"),
+        WhyDefault("nothing is discounted unless the case gives a rate"),
+    ] = key("discount_rate", "Discount rate of a year, for life cost and net present value.", "0 %")
+    new_plant_life_years: Annotated[float, PLANT_LIFE] = key(
+        "new_plant_life", "Years that a new plant lasts, for its residual value by straight line.", "15 years"
+    )
     refrigerant_price: Annotated[tuple[tuple[str, Range], ...] | None, PricesValue()] = key(
         "refrigerant_price", "Price of a kilogram, by refrigerant.", None
     )

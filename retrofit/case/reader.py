@@ -21,6 +21,7 @@ from retrofit.case.between import problems_between_keys
 from retrofit.case.complaints import complaint
 from retrofit.case.exchangers import MEDIUM_HEATS
 from retrofit.case.model import FIELDS, TABLES, Case, CaseFile, Default
+from retrofit.case.money import PLANT_LIFE_WHY, Money
 from retrofit.case.positions import KeyPath
 from retrofit.case.source import parsed, text_of
 from retrofit.case.table import Table, WhyDefault
@@ -146,6 +147,18 @@ def _defaults(model: CaseFile) -> Iterator[Default]:
         if factors and others:
             why = "the exchanger is taken as good as with today's refrigerant"
             yield Default(f"{way}.film_factor", f"1.0 for {listed(others, 'and')}", why)
+    if model.money is not None and "new_plant_life_years" not in model.money.model_fields_set:
+        yield from _plant_life(model)
+
+
+def _plant_life(model: CaseFile) -> Iterator[Default]:
+    """Yield the life of a new plant if the residual value of one rests on it."""
+    options = model.options.by_refrigerant.values() if model.options else ()
+    shared = model.money.change.new_plant if model.money and model.money.change else None
+    is_bought = [option for option in options if (option.new_plant or shared) is not None]
+    if any(option.plant_life_years is None and option.residual_value is None for option in is_bought):
+        field = Money.model_fields["new_plant_life_years"]
+        yield Default("money.new_plant_life", str(field.default), PLANT_LIFE_WHY)
 
 
 def _written_keys(table: Table) -> set[str | None]:

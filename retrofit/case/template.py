@@ -266,12 +266,13 @@ match = "mean"                   # refrigerants are compared at equal mean (or d
 # tariff = 0.18                  # a kWh
 # demand_charge = 60             # a year, for each kW of peak power
 # discount_rate = "6 %"
+# new_plant_life = "15 years"    # for the residual value of a new plant, by straight line
 # refrigerant_price = {{R448A = [25, 30, 45], R404A = 90}}   # a kilogram
 # leak_check = 250               # one check
 # levy = 0                       # for each tonne of CO2 equivalent of refrigerant bought
 # yearly_service = 2000          # the same for every option
 
-# [money.change]                 # first cost of any change; what is left out is not counted
+# [money.change]                 # first cost of any change; write 0 for what costs nothing
 # recovery = 1500                # of the old charge, weighing and disposal
 # refrigerant = 3000             # or left out: charge times price
 # reclaim_credit = 0             # what the old charge brings
@@ -292,6 +293,9 @@ match = "mean"                   # refrigerants are compared at equal mean (or d
 # charge = "40 kg"
 # largest_circuit = "20 kg"      # of a new plant: what one leak can release
 # seasonal_cop = 3.1             # of a new plant, fans and pumps included
+# peak_power = "40 kW"           # beside seasonal_cop, for the demand charge
+# plant_life = "20 years"        # of this new plant
+#| residual_value = 40000        # at the end of the remaining life, in place of the straight line
 
 # [plus_minus]                   # how far inputs may be off, each under its full key
 # duty.evaporating = "1 K"

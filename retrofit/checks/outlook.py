@@ -8,19 +8,32 @@ from collections.abc import Callable, Iterator, Sequence
 from dataclasses import dataclass
 
 from retrofit.checks.answer import Matter, left_words, option_name
+from retrofit.checks.money_words import (
+    INCOMPLETE,
+    INCOMPLETE_WORDS,
+    NO_LIFE,
+    PAYBACK_WORDS,
+    abatement_words,
+    missing_items_words,
+    years_text,
+)
 from retrofit.checks.prospects import (
     FAR_FROM_METER,
     KEPT,
+    NO_MONEY,
+    Headline,
     Prospect,
     Ranked,
+    compared,
     difference,
-    first_cost_range,
     groups,
+    headline,
     is_alike,
     leading,
-    life_cost,
     life_of_result,
     missing_words,
+    payback,
+    payback_quantiles,
     probability,
     prospects,
     ranked,
@@ -29,8 +42,9 @@ from retrofit.study import Comparison
 from retrofit.study.bands import model_band
 from retrofit.study.emissions import Tewi
 from retrofit.study.life import Swing
-from retrofit.study.money import cost_per_tonne_words, payback_words
+from retrofit.study.money import Payback, PaybackState, abatement_of
 from retrofit.study.ranking import stability_words
+from retrofit.study.sums import ComparisonState
 from retrofit.units import UnitSystem, format_number, listed, shown
 
 NBSP = "\N{NO-BREAK SPACE}"
@@ -40,7 +54,8 @@ DIGITS = 4  # of a computed sum or energy: the model knows two of them, the othe
 STRONGEST = 3  # inputs that the sentence names
 # Results whose strongest inputs are told, the first one known of an option first; and what each is in words.
 TOLD = {
-    "yearly_saving": "yearly saving",
+    "npv": "net present value",
+    "yearly_saving": "annual saving",
     "avoided_t": "CO2e avoided over the remaining life",
     "energy_saving_J": "electricity saved in a year",
     "cop_ratio": "COP against today's",
@@ -237,7 +252,7 @@ def _by_difference(
 def _unknown(option: Prospect, missing: str) -> str:
     """Return what is missing, told so that options that lack the same stand together."""
     own = f"[options.{option.entry.refrigerant.designation}]"
-    return f"unknown, for want of {missing.replace(own, 'its table in [options]')}"
+    return f"unknown: missing {missing.replace(own, 'its table in [options]')}"
 
 
 def _energy(options: tuple[Prospect, ...], units: UnitSystem) -> Matter:
@@ -258,9 +273,7 @@ def _alike(options: Sequence[Prospect], quantity: str) -> Matter:
     """Return which options the model cannot tell apart among themselves."""
     apart = [option for option in options if option.deed != KEPT]
     found = [listed([option.name for option in group], "and") for group in groups(apart, quantity)]
-    about = {"energy": "Electricity of a year", "emissions": "Warming", "cost": "Cost over the remaining life"}[
-        quantity
-    ]
+    about = {"energy": "Electricity of a year", "emissions": "Warming"}[quantity]
     return Matter(f"{about}, options among themselves", (("no meaningful difference", tuple(found)),) if found else ())
 
 
@@ -333,50 +346,122 @@ def _emissions(options: tuple[Prospect, ...]) -> Matter:
 # Money
 
 
+Groups = tuple[tuple[str, tuple[str, ...]], ...]
+
+
 def _money(comparison: Comparison, options: tuple[Prospect, ...]) -> Iterator[Matter]:
     as_is = options[0]
-    words = ("cheaper", f"no meaningful difference, {_within()} in the electricity", "dearer")
-    found = _by_difference(options, "cost", words, lambda p: money_text(comparison, life_cost(p), signed=True))
-    yield Matter(f"Cost over {life_text(as_is.account.tewi)}, first cost included, against the plant as it is", found)
-    yield Matter("Simple payback, first cost over yearly saving", _paybacks(options))
+    yield Matter(
+        f"Net present value over {life_text(as_is.account.tewi)}, {discounting_words(comparison)}, first cost paid, "
+        f"against {as_is.name} as it is; {_middle_words(comparison)}",
+        _present_values(comparison, options),
+    )
+    yield Matter(
+        f"Simple payback, first cost over annual saving; {_middle_words(comparison)}", _paybacks(comparison, options)
+    )
+    yield Matter(
+        "Residual value of a new plant at the end of the remaining life, counted in its net present value",
+        tuple(_residuals(comparison, options)),
+    )
 
 
-def _paybacks(options: tuple[Prospect, ...]) -> tuple[tuple[str, tuple[str, ...]], ...]:
-    found: dict[str, list[str]] = {text: [] for text in PAYBACKS}
-    for option in options[1:]:
-        found.setdefault(_payback_group(options[0], option), []).append(_payback_amount(option))
+def _middle_words(comparison: Comparison) -> str:
+    """Return what the leading figures are."""
+    has_samples = bool(life_of_result(comparison).certainty)
+    return "median (P10 to P90)" if has_samples else "base values, no Monte Carlo samples"
+
+
+def discounting_words(comparison: Comparison) -> str:
+    """Return at which rate money is discounted."""
+    rate = comparison.case.money.discount_rate if comparison.case.money else 0.0
+    return f"discounted at {100.0 * rate:g}{NBSP}%" if rate else "not discounted"
+
+
+def _sorted(found: dict[str, list[str]]) -> Groups:
     return tuple((text, tuple(names)) for text, names in found.items() if names)
 
 
-PAYBACKS = (
-    "within the remaining life",
-    "within the remaining life, but by a saving that the model cannot tell from none",
-    "not within the remaining life",
-    "none, since a year costs no less than with the plant as it is",
-    "nothing to pay back",
-)
+def _present_values(comparison: Comparison, options: tuple[Prospect, ...]) -> Groups:
+    saves, near, costs = "saves money", f"no meaningful difference, {_within()} in the electricity", "costs more"
+    found: dict[str, list[str]] = {saves: [], near: [], costs: []}
+    for option in options[1:]:
+        lead = headline(option, "npv")
+        if lead is None:
+            heading, name = incomplete_words(comparison, option)
+            found.setdefault(heading, []).append(name)
+            continue
+        where = near if is_alike(options[0], option, "npv") else saves if lead.middle > 0.0 else costs
+        found[where].append(f"{option.name} {_with_band(comparison, lead, signed=True)}")
+    return _sorted(found)
 
 
-def _payback_group(as_is: Prospect, option: Prospect) -> str:
-    appraisal = option.account.appraisal
-    if appraisal is None or appraisal.payback_years is None:
-        return _unknown(option, missing_words(option, "cost"))
-    years, life = float(appraisal.payback_years), appraisal.life_years
-    if math.isinf(years):
-        return PAYBACKS[3]
-    if years == 0.0:
-        return PAYBACKS[4]
-    if life is None:
-        return "of a remaining life that is not given"
-    if years > float(life):
-        return PAYBACKS[2]
-    return PAYBACKS[1 if is_alike(as_is, option, "saving") else 0]
+def _with_band(comparison: Comparison, lead: Headline, signed: bool = False) -> str:
+    band = "" if lead.band is None else " ({} to {})".format(*(rounded_text(end, signed) for end in lead.band))
+    return f"{money_text(comparison, lead.middle, signed)}{band}"
 
 
-def _payback_amount(option: Prospect) -> str:
-    appraisal = option.account.appraisal
-    years = None if appraisal is None or appraisal.payback_years is None else float(appraisal.payback_years)
-    return option.name if not years or math.isinf(years) else f"{option.name} {years:.1f} years"
+def incomplete_words(comparison: Comparison, option: Prospect) -> tuple[str, str]:
+    """Return why the net present value of an option is not said: the state with what it needs, and the option.
+
+    Args:
+        comparison: An assessed result with its remaining life.
+        option: An option whose comparison is incomplete or unknown.
+    """
+    found, needs = compared(option, "npv"), missing_words(option, "npv")
+    if found.state is not ComparisonState.INCOMPLETE:
+        return f"{UNKNOWN}, needs {needs}", option.name
+    known = money_text(comparison, found.of_known, signed=True)
+    heading = f"{INCOMPLETE} without {needs}: {INCOMPLETE_WORDS}"
+    return heading, f"{option.name} {known} on the items known for both"
+
+
+def _paybacks(comparison: Comparison, options: tuple[Prospect, ...]) -> Groups:
+    within = PAYBACK_WORDS[PaybackState.WITHIN]
+    found: dict[str, list[str]] = {text: [] for text in (within, within + INSIDE_BAND, *PAYBACK_WORDS.values())}
+    for option in options[1:]:
+        heading, name = _payback_of_median(comparison, options[0], option)
+        found.setdefault(heading, []).append(name)
+    return _sorted(found)
+
+
+INSIDE_BAND = ", but the saving is within the band of the model"
+
+
+def _payback_of_median(comparison: Comparison, as_is: Prospect, option: Prospect) -> tuple[str, str]:
+    """Return the state of an option's payback in words, and the option with its years."""
+    drawn = payback_quantiles(option)
+    found = payback(option) if drawn is None else drawn[1]
+    if found.state is PaybackState.UNKNOWN and found.years is None:
+        is_short = compared(option, "npv").state is ComparisonState.INCOMPLETE
+        return INCOMPLETE if is_short else UNKNOWN, option.name
+    is_near = found.state is PaybackState.WITHIN and is_alike(as_is, option, "saving")
+    words = NO_LIFE if found.state is PaybackState.UNKNOWN else PAYBACK_WORDS[found.state]
+    return words + (INSIDE_BAND if is_near else ""), f"{option.name}{_payback_years(option, found, drawn)}"
+
+
+def _payback_years(option: Prospect, found: Payback, drawn: tuple[Payback, Payback, Payback] | None) -> str:
+    """Return the years of a payback with its band and the probability of paying back; nothing of one that is none."""
+    years = f" {years_text(found)} years" if found.years is not None else ""
+    if drawn is None or found.state is PaybackState.NONE_NEEDED:
+        return years
+    chance = probability(option, "pays_back")
+    parts = [f"{years_text(drawn[0])} to {years_text(drawn[2])}"]
+    parts += [f"{share(chance)} probability of paying back"] if chance is not None else []
+    return f"{years} ({', '.join(parts)})"
+
+
+def _residuals(comparison: Comparison, options: Sequence[Prospect]) -> Iterator[tuple[str, tuple[str, ...]]]:
+    """Yield how residual values come about, each with its options."""
+    found: dict[str, list[str]] = {}
+    for option in options:
+        appraisal, first = option.account.appraisal, option.account.first_cost
+        if appraisal is None or appraisal.residual is None or first is None or first.plant_life_years is None:
+            continue
+        given = option.account.plan.option.residual_value if option.account.plan.option else None
+        life = f"{float(first.plant_life_years):g} years"
+        text = "as the case gives it" if given is not None else f"by straight line over its life of {life}"
+        found.setdefault(text, []).append(f"{option.name} {money_text(comparison, float(appraisal.residual))}")
+    yield from ((text, tuple(names)) for text, names in found.items())
 
 
 # How sure
@@ -388,6 +473,7 @@ def _certainty(comparison: Comparison, options: tuple[Prospect, ...]) -> Matter:
         ("carries the cooling needed at the design point", "carries"),
         ("uses less electricity in a year than the plant as it is", "uses_less"),
         ("costs less over the remaining life", "cheaper"),
+        ("pays back within the remaining life", "pays_back"),
         ("warms less over the remaining life", "cleaner"),
     ):
         names = tuple(
@@ -531,7 +617,9 @@ def costs_words(comparison: Comparison, units: UnitSystem) -> str:
         return ""
     as_is, *others = prospects(comparison)
     named = _named(comparison, others)
-    parts = [_cost_words(comparison, units, as_is, option) for option in named]
+    life = life_of_result(comparison)
+    parts = [f"Medians (P10 to P90) of {life.draws} Monte Carlo samples."] if life.certainty and named else []
+    parts += [_cost_words(comparison, units, as_is, option) for option in named]
     more = len(others) - len(named)
     if more:
         parts.append(f"{more} more option{'s' if more > 1 else ''} in the sections on the remaining life.")
@@ -556,13 +644,29 @@ def _cost_words(comparison: Comparison, units: UnitSystem, as_is: Prospect, opti
     year, warming = difference(as_is, option, "energy"), difference(as_is, option, "emissions")
     parts = [_year_words(year.ratio, year.is_alike, year.missing)]
     if comparison.case.money is not None:
-        parts.insert(0, f"first cost {_first_cost_words(comparison, option)}")
-        by = ", by a saving inside the band" if _payback_group(as_is, option) == PAYBACKS[1] else ""
-        parts.append(_payback_briefly(option) + by)
+        parts = [f"first cost {_first_cost_words(comparison, option)}", *parts, *_pays_words(comparison, as_is, option)]
     if warming.ratio is not None:
         near = ": no meaningful difference" if warming.is_alike else ""
         parts.append(f"warming {percent(warming.ratio)}{near}")
     return f"{option.name}: {'; '.join(parts)}."
+
+
+def _pays_words(comparison: Comparison, as_is: Prospect, option: Prospect) -> Iterator[str]:
+    """Yield payback and net present value for page one; of an incomplete comparison what it needs."""
+    lead = headline(option, "npv")
+    drawn = payback_quantiles(option)
+    found = payback(option) if drawn is None else drawn[1]
+    if found.state is PaybackState.UNKNOWN and found.years is None:
+        yield f"payback and net present value {incomplete_words(comparison, option)[0]}"
+        return
+    near = INSIDE_BAND if found.state is PaybackState.WITHIN and is_alike(as_is, option, "saving") else ""
+    if found.years is None:
+        yield f"{PAYBACK_WORDS[found.state]}{_payback_years(option, found, drawn)}"
+    else:
+        beyond = f", {PAYBACK_WORDS[found.state]}" if found.state is PaybackState.BEYOND else ""
+        yield f"payback{_payback_years(option, found, drawn)}{beyond}{near}"
+    if lead is not None:
+        yield f"net present value {_with_band(comparison, lead, signed=True)}"
 
 
 def _year_words(ratio: float | None, is_near: bool, missing: str) -> str:
@@ -575,34 +679,14 @@ def _year_words(ratio: float | None, is_near: bool, missing: str) -> str:
     return f"{amount} {more} electricity{': no meaningful difference' if is_near else ''}"
 
 
-def _payback_briefly(option: Prospect) -> str:
-    appraisal = option.account.appraisal
-    payback = None if appraisal is None else appraisal.payback_years
-    if appraisal is None or payback is None:
-        return "payback unknown"
-    if math.isinf(float(payback)):
-        return "no payback"
-    if float(payback) == 0.0:
-        return "nothing to pay back"
-    is_beyond = appraisal.life_years is not None and float(payback) > float(appraisal.life_years)
-    return f"payback {float(payback):.1f} years{', beyond the remaining life' if is_beyond else ''}"
-
-
 def _first_cost_words(comparison: Comparison, option: Prospect) -> str:
-    found = first_cost_range(option)
-    first = option.account.first_cost
-    if found is None:
-        return f"unknown ({first.missing if first and first.missing else 'not given'})"
-    low, base, high = found
-    spread = f" ({rounded_text(low)} to {rounded_text(high)})" if low < high else ""
-    return money_text(comparison, base) + spread
-
-
-def payback_text(option: Prospect) -> str:
-    """Return the payback of an option in words."""
-    appraisal = option.account.appraisal
-    words = "payback unknown" if appraisal is None else payback_words(appraisal)
-    return words if words.startswith(("payback", "no payback", "nothing")) else f"payback in {words}"
+    first, lead = option.account.first_cost, headline(option, "first_cost")
+    if lead is not None:
+        return _with_band(comparison, lead)
+    if first is None or first.at_least is None:
+        return f"unknown (needs {missing_items_words(first.missing) if first else NO_MONEY})"
+    needs = missing_items_words(first.missing)
+    return f"at least {money_text(comparison, float(first.at_least))} without {needs}"
 
 
 def per_tonne_text(comparison: Comparison, option: Prospect) -> str:
@@ -613,4 +697,6 @@ def per_tonne_text(comparison: Comparison, option: Prospect) -> str:
         option: The option.
     """
     appraisal = option.account.appraisal
-    return UNKNOWN if appraisal is None else cost_per_tonne_words(appraisal, currency(comparison))
+    if appraisal is None:
+        return UNKNOWN
+    return abatement_words(abatement_of(appraisal), appraisal, lambda amount: money_text(comparison, amount))

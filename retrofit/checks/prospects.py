@@ -7,20 +7,22 @@ from dataclasses import dataclass
 
 import numpy as np
 
+from retrofit.checks.money_words import NO_LIFE, missing_items_words
 from retrofit.study import Comparison, Entry
 from retrofit.study.accounts import Account
 from retrofit.study.bands import alike, band_of, groups_alike
 from retrofit.study.criteria import criteria
 from retrofit.study.life import Certainty, Life
+from retrofit.study.money import Payback, payback_of
 from retrofit.study.plan import Use
 from retrofit.study.ranking import Flip, Order, Scores, Stability, flip, order, rank_stability, score
 from retrofit.study.spread import at
+from retrofit.study.sums import ComparisonState, Sum
 from retrofit.study.year import YearRun
 
 KEPT = "kept, with its repairs"
 DEEDS = {"as is": "as it is", "keep": KEPT, "convert": "converted", "replace": "new plant"}
 NO_MONEY = "the case has no [money]"
-NOT_GIVEN = "remaining life, `remaining_life` in [law]"
 MODELLED_COSTS = ("energy", "demand")  # parts of a yearly cost that the model reckons
 FAR_FROM_METER = 0.15  # common practice for a plausible model of a plant that is not tuned to its meter
 
@@ -53,8 +55,8 @@ class Difference:
     """How an option differs from the plant as it is in one quantity.
 
     Attributes:
-        amount: Its number less that of the plant as it is; None where `missing` says why. [J, kg CO2e, currency]
-        ratio: Amount over the number of the plant as it is; None for money, which has no such number.
+        amount: Its number less that of the plant as it is; None where `missing` says why. [J, kg CO2e]
+        ratio: Amount over the number of the plant as it is.
         is_alike: Whether the model cannot tell them apart.
         missing: What is missing.
     """
@@ -116,7 +118,7 @@ def difference(as_is: Prospect, option: Prospect, quantity: str) -> Difference:
     Args:
         as_is: The plant as it is.
         option: The option.
-        quantity: "energy" or "saving" of a year, "emissions" or "cost" over the remaining life. [-]
+        quantity: "energy" of a year, or "emissions" over the remaining life. [-]
     """
     here, there = _number(option, quantity), _number(as_is, quantity)
     if here is None or there is None:
@@ -131,7 +133,8 @@ def is_alike(one: Prospect, other: Prospect, quantity: str) -> bool:
 
     Args:
         one, other: Options.
-        quantity: As for `difference`. [-]
+        quantity: As for `difference`, or against the plant as it is "saving" of a year or "npv" of the remaining
+            life. [-]
     """
     a, b = _number(one, quantity), _number(other, quantity)
     if a is None or b is None:
@@ -164,23 +167,15 @@ def _number(option: Prospect, quantity: str) -> tuple[float, float] | None:
         if warming.total_kg is None or warming.indirect_kg is None:
             return None
         return float(warming.total_kg), float(warming.indirect_kg)
-    cost, saving, extra = option.account.yearly_cost, option.account.saving, life_cost(option)
-    if cost is None or saving is None or saving.total is None:
+    cost, saving, appraisal = option.account.yearly_cost, option.account.saving, option.account.appraisal
+    if cost is None or saving is None or saving.total is None or appraisal is None:
         return None
     modelled = float(sum((part for code in MODELLED_COSTS if (part := cost.parts[code]) is not None), np.asarray(0.0)))
     if quantity == "saving":
-        return -float(saving.total), modelled
-    return None if extra is None else (extra, modelled * float(option.account.tewi.life_years or 0.0))
-
-
-def life_cost(option: Prospect) -> float | None:
-    """Return what an option costs over the remaining life more than the plant as it is; None if not known. [currency]
-
-    Args:
-        option: The option.
-    """
-    extra = option.account.appraisal.extra_cost if option.account.appraisal else None
-    return None if extra is None else float(extra[..., -1])
+        return float(saving.total), modelled
+    if appraisal.npv is None or appraisal.annuity_years is None:
+        return None
+    return float(appraisal.npv), modelled * float(appraisal.annuity_years)
 
 
 def _missing(option: Prospect, quantity: str) -> str:
@@ -189,14 +184,12 @@ def _missing(option: Prospect, quantity: str) -> str:
         return option.no_year
     if quantity == "emissions":
         return "; ".join(account.tewi.missing)
-    if account.first_cost is None or account.saving is None:
+    if account.appraisal is None or account.saving is None:
         return NO_MONEY
-    found = [account.first_cost.missing] if account.first_cost.total is None else []
-    if account.saving.total is None:
-        found.append(next((words for words in account.saving.not_counted if words.startswith("energy")), "energy"))
-    if account.tewi.life_years is None:
-        found.append(NOT_GIVEN)
-    return "; ".join(found)
+    excluded = account.saving.excluded if quantity == "saving" else account.appraisal.excluded
+    items = (*excluded, *(item for item in account.saving.not_counted if item.code == "energy"))
+    no_life = quantity != "saving" and account.tewi.life_years is None
+    return missing_items_words(items) + (f"; {NO_LIFE}" if items and no_life else NO_LIFE if no_life else "")
 
 
 def missing_words(option: Prospect, quantity: str) -> str:
@@ -204,7 +197,7 @@ def missing_words(option: Prospect, quantity: str) -> str:
 
     Args:
         option: The option.
-        quantity: As for `difference`. [-]
+        quantity: As for `is_alike`. [-]
     """
     return "" if _number(option, quantity) is not None else _missing(option, quantity)
 
@@ -225,7 +218,7 @@ def probability(option: Prospect, name: str) -> float | None:
 
     Args:
         option: The option.
-        name: "carries", "uses_less", "cheaper" or "cleaner". [-]
+        name: "carries", "uses_less", "cheaper", "cleaner" or "pays_back". [-]
     """
     if option.certainty is None or (name == "carries" and option.account.plan.family == "replace"):
         return None
@@ -233,16 +226,115 @@ def probability(option: Prospect, name: str) -> float | None:
     return value
 
 
-def first_cost_range(option: Prospect) -> tuple[float, float, float] | None:
-    """Return first cost with every item low, at its base, and high; None if not known. [currency]
+@dataclass(frozen=True)
+class Headline:
+    """A leading number: the median of the samples with its 10th and 90th percentile, without samples the base."""
+
+    middle: float
+    band: tuple[float, float] | None
+
+
+def headline(option: Prospect, name: str) -> Headline | None:
+    """Return a number of money as it leads.
 
     Args:
         option: The option.
+        name: "first_cost", "yearly_saving", "payback_years", "npv", "life_cost" or "cost_per_t". [-]
+    Returns: The number; None if it is not known, or rests on an incomplete sum or comparison.
+    """
+    account, appraisal = option.account, option.account.appraisal
+    if appraisal is None or account.first_cost is None or account.saving is None:
+        return None
+    base = {
+        "first_cost": account.first_cost.total,
+        "yearly_saving": account.saving.total,
+        "payback_years": appraisal.payback_years,
+        "npv": appraisal.npv,
+        "life_cost": appraisal.life_cost.total,
+        "cost_per_t": appraisal.cost_per_t,
+    }[name]
+    drawn = quantile(option, name)
+    if base is None:
+        return None
+    return Headline(float(base), None) if drawn is None else Headline(drawn[1], (drawn[0], drawn[2]))
+
+
+def sum_of_option(option: Prospect, name: str) -> Sum | None:
+    """Return what an option costs by base values; None without money in the case. [currency]
+
+    Args:
+        option: The option.
+        name: "first_cost", "yearly_cost" or "life_cost". [-]
+    """
+    account = option.account
+    if account.first_cost is None or account.yearly_cost is None or account.appraisal is None:
+        return None
+    sums = {"first_cost": account.first_cost.sum, "yearly_cost": account.yearly_cost.sum}
+    return {**sums, "life_cost": account.appraisal.life_cost}[name]
+
+
+@dataclass(frozen=True)
+class Compared:
+    """A sum of an option against the plant as it is, above 0 where the option saves money. [currency]
+
+    Attributes:
+        state: What it counts.
+        amount: The sum if it counts every item; None else.
+        of_known: The sum of the items known for both; None if there is none.
+    """
+
+    state: ComparisonState
+    amount: float | None
+    of_known: float | None
+
+
+def compared(option: Prospect, quantity: str) -> Compared:
+    """Return what an option saves against the plant as it is, in base values.
+
+    Args:
+        option: The option.
+        quantity: "saving" of a year, or "npv" of the remaining life. [-]
+    """
+    saving, appraisal = option.account.saving, option.account.appraisal
+    if saving is None or appraisal is None:
+        return Compared(ComparisonState.UNKNOWN, None, None)
+    if quantity == "saving":
+        state, amount, known = saving.state, saving.total, saving.of_known
+    else:
+        state, amount, known = appraisal.state, appraisal.npv, appraisal.npv_of_known
+    if known is None:
+        return Compared(ComparisonState.UNKNOWN, None, None)
+    return Compared(state, None if amount is None else float(amount), float(known))
+
+
+def payback(option: Prospect) -> Payback:
+    """Return the simple payback of an option by base values, beside the remaining life."""
+    appraisal = option.account.appraisal
+    if appraisal is None:
+        return payback_of(None, None)
+    years, life = appraisal.payback_years, appraisal.life_years
+    return payback_of(None if years is None else float(years), None if life is None else float(life))
+
+
+def payback_quantiles(option: Prospect) -> tuple[Payback, Payback, Payback] | None:
+    """Return the simple payback at the 10th, 50th and 90th percentile, beside the base remaining life."""
+    found, life = quantile(option, "payback_years"), payback(option).life_years
+    if found is None:
+        return None
+    return payback_of(found[0], life), payback_of(found[1], life), payback_of(found[2], life)
+
+
+def first_cost_range(option: Prospect) -> tuple[float, float, float] | None:
+    """Return first cost with every item low, at its base, and high; a lower bound where an item is missing. [currency]
+
+    Args:
+        option: The option.
+    Returns: The three sums; None if no item is known.
     """
     found = option.three.first_cost
-    if found is None or found.total is None:
+    if found is None or found.at_least is None:
         return None
-    return at(found.total, 0), at(found.total, 1), at(found.total, 2)
+    return at(found.at_least, 0), at(found.at_least, 1), at(found.at_least, 2)
 
 
 # Which comes first

@@ -43,8 +43,8 @@ HEADLINES = (
     Headline("GWP AR5", "comparison", ("is-gwp-ipcc-ar5-100-years",)),
     Headline("Electricity against today", "year", ("year-electricity-against-the-plant-as-it-is",)),
     Headline("Warming against today", "emissions", ("tewi-sum-against-the-plant-as-it-is",)),
-    Headline("First cost", "money", ("life-first-cost",)),
-    Headline("Saving", "money", ("yearly-saving-against-the-plant-as-it-is",), "a year"),
+    Headline("First cost", "money", ("once-first-cost",)),
+    Headline("Saving", "money", ("yearly-annual-saving-against-the-plant-as-it-is",), "a year"),
 )
 TODAY = (
     Headline("Cooling", "comparison", ("plant-full-cooling-at-full", "compressor-cooling")),

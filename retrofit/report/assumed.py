@@ -19,7 +19,8 @@ _MACHINE = ("compressor.isentropic_efficiency", "compressor.volumetric_efficienc
 _DRIVE = ("compressor.motor_efficiency",)  # from readings, or not there
 _EXCHANGERS = tuple(f"{way}.{key}" for way in ("evaporator", "condenser") for key in ("film_factor", "pressure_drop"))
 _PLANT = (*_EFFECTS, *_MACHINE, *_EXCHANGERS, "evaporator.specific_heat", "condenser.specific_heat")
-_ALL = (*_PLANT, *_DRIVE, "year", "emissions", "money", "options")
+_ALL = (*_PLANT, *_DRIVE, "year", "emissions", "options")
+_LIFE = (*_ALL, "money")
 _GWP = ("emissions.gwp_edition",)
 # Defaults that the rows of a group of the comparison rest on, by the name of the group; a table of the case stands for
 # all of its keys.
@@ -37,8 +38,9 @@ GROUPS = {
     "parts": (*_PLANT, *_DRIVE, "year"),
     "charge": (),
     "tewi": (),
-    "yearly": ("money",),
-    "life": ("money", "options"),
+    "yearly": (),
+    "once": ("options",),
+    "life": ("options",),
     "shares": _PLANT,
 }
 # And some rows on more, by a part of their label.
@@ -59,14 +61,18 @@ ROWS = {
     "Sum": _ALL,
     "Energy": (*_PLANT, *_DRIVE, "year"),
     "Demand charge": (*_PLANT, *_DRIVE, "year"),
-    "Saving against": _ALL,
-    "Simple payback": _ALL,
-    "Cost against": _ALL,
-    "The same: ": _ALL,
-    "Net present value": _ALL,
-    "Cost of CO2e": _ALL,
+    "Annual cost": _ALL,
+    "Annual saving": _ALL,
+    "Residual value": ("money.new_plant_life",),
+    "Life cost": _LIFE,
+    "Payback": _ALL,
+    "payback": _ALL,
+    "paying back": _ALL,
+    "pays back": _ALL,
+    "Net present value": _LIFE,
+    "Cost of CO2e": _LIFE,
     "less electricity": (*_PLANT, "year"),
-    "costs less": _ALL,
+    "costs less": _LIFE,
     "warms less": _ALL,
 }
 WORDS = ("What is done",)  # rows that rest on nothing

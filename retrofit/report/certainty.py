@@ -5,8 +5,9 @@ from __future__ import annotations
 from collections.abc import Callable
 from dataclasses import dataclass
 
+from retrofit.checks.money_words import INCOMPLETE
 from retrofit.checks.outlook import KG_PER_T, TOLD, currency, result_text, rounded_text
-from retrofit.checks.prospects import Prospect, life_of_result, probability, quantile, ranked
+from retrofit.checks.prospects import Prospect, compared, life_of_result, probability, quantile, ranked
 from retrofit.figures.tornado import limits_text
 from retrofit.report.judging import spelled
 from retrofit.report.plain import plain
@@ -15,6 +16,7 @@ from retrofit.report.table import MOST_COLUMNS, Cell, Group, Row, Table
 from retrofit.study import Comparison
 from retrofit.study.life import Life
 from retrofit.study.ranking import MEANING, SCALE
+from retrofit.study.sums import ComparisonState
 from retrofit.study.uncertain import Uncertain
 from retrofit.units import MISSING, UnitSystem, format_number, listed
 
@@ -22,10 +24,11 @@ ORIGINS = {"case": "the case", "assumed": "assumed", "model": "the model"}
 PROBABILITIES = (
     ("carries the cooling needed", "carries"),
     ("uses less electricity in a year", "uses_less"),
-    ("costs less over the remaining life", "cheaper"),
+    ("costs less over the remaining life, discounted", "cheaper"),
+    ("pays back within the remaining life", "pays_back"),
     ("warms less over the remaining life", "cleaner"),
 )
-RESTS_ON = {"uses_less": "energy", "cheaper": "cost", "cleaner": "emissions"}
+RESTS_ON = {"uses_less": "energy", "cheaper": "npv", "pays_back": "npv", "cleaner": "emissions"}
 DESIGN, YEARS, MONEY, LIFE = "Design point", "Electricity and warming", "Money", "Money over the remaining life"
 GUIDE = (
     "as the Guide to the expression of uncertainty in measurement (JCGM 100:2008, 4.3.7) takes where only the limits "
@@ -71,11 +74,23 @@ def _share(options: Options, option: Prospect, name: str) -> Cell:
     if value is None and name == "carries" and option.account.plan.family == "replace" and option.certainty:
         mark = options.notes.mark(shown_name(option), "a new plant is sized to carry what is needed")
         return Cell("sized for it", is_number=False, marks=(mark,))
+    rests_on = RESTS_ON.get(name, "energy")
+    if value is None and rests_on == "npv" and compared(option, "npv").state is ComparisonState.INCOMPLETE:
+        mark = options.notes.mark(shown_name(option), f"{INCOMPLETE} without {missing_of(rests_on)(option)}")
+        return Cell(INCOMPLETE, is_number=False, marks=(mark,))
     if value is None:
-        return options.unknown(option, missing_of(RESTS_ON.get(name, "energy"))(option))
+        return options.unknown(option, missing_of(rests_on)(option))
+    return Cell(chance(value))
+
+
+def chance(value: float) -> str:
+    """Return a probability in per cent for a cell, 0 and 100 for never and always alone.
+
+    Args:
+        value: The probability. [-]
+    """
     whole = round(100.0 * value)
-    edge = "<" if whole == 0 and value > 0.0 else ">" if whole == 100 and value < 1.0 else ""
-    return Cell({"<": "< 1", ">": "> 99"}.get(edge, str(whole)))
+    return "< 1" if whole == 0 and value > 0.0 else "> 99" if whole == 100 and value < 1.0 else str(whole)
 
 
 def spans(comparison: Comparison, options: Options, units: UnitSystem) -> Table | None:
@@ -155,10 +170,10 @@ def _results(comparison: Comparison, units: UnitSystem) -> tuple[Result, ...]:
         as_is("tewi_kg", "Warming over the remaining life", "t CO2e", YEARS, KG_PER_T),
         as_is("avoided_t", "CO2e avoided over the remaining life", "t CO2e", YEARS),
         as_is("first_cost", "First cost", money, MONEY),
-        as_is("yearly_saving", "Yearly saving", money, MONEY),
+        as_is("yearly_saving", "Annual saving", money, MONEY),
         as_is("payback_years", "Simple payback", "years", MONEY),
+        as_is("life_cost", "Life cost", money, LIFE),
         as_is("npv", "Net present value", money, LIFE),
-        as_is("life_saving", "Saved over the remaining life, first cost paid", money, LIFE),
         as_is("cost_per_t", "Cost of a tonne of CO2e avoided", f"{money}/t", LIFE),
     )
 

@@ -3,21 +3,22 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Mapping
+from collections.abc import Iterable, Mapping
 from dataclasses import asdict, fields
 from typing import Any
 
 import numpy as np
 
+from retrofit.checks.money_words import payback_words
 from retrofit.checks.outlook import outlook
 from retrofit.checks.prospects import (
     Prospect,
     difference,
     first_cost_range,
     is_alike,
-    life_cost,
     life_of_result,
     missing_words,
+    payback,
     probability,
     prospects,
     ranked,
@@ -27,14 +28,14 @@ from retrofit.report.machine_agreement import agreement_json
 from retrofit.study import Comparison, Entry
 from retrofit.study.first_cost import FirstCost
 from retrofit.study.life import Certainty, Swing
-from retrofit.study.money import payback_words
+from retrofit.study.money import abatement_of, payback_of
 from retrofit.study.spread import Spread, at
+from retrofit.study.sums import Missing
 from retrofit.study.uncertain import Uncertain
 from retrofit.study.year import AirBins, PlantMap, YearRun
 from retrofit.units import SI
 
 SCHEMA = "retrofit.year/1"
-NEVER = "never: a year costs no less than with the plant as it is"
 NUMBERS = [
     item.name for item in fields(YearRun) if item.name not in ("machine", "reason", "monthly_J", "by_air", "map")
 ]
@@ -44,7 +45,7 @@ RENAMED = {
     "yearly_cost": "yearly_cost_currency",
     "yearly_saving": "yearly_saving_currency",
     "npv": "net_present_value_currency",
-    "life_saving": "life_saving_currency",
+    "life_cost": "life_cost_currency",
     "cost_per_t": "cost_per_tonne_CO2e_currency",
     "avoided_t": "avoided_kg",
 }
@@ -72,7 +73,9 @@ def year_json(comparison: Comparison) -> dict[str, Any]:
             "is_alike": "no meaningful difference: inside the band of the model",
             "quantiles": "values that 10, 50 and 90 per cent of the draws stay below",
             "money": "in the currency of the case, prices as today; keys end in _currency",
-            "never": NEVER,
+            "states": "a sum is complete, at least (a lower bound) or unknown; a comparison complete, incomplete (only "
+            "items known for both) or unknown; a payback never, none needed, within, beyond or unknown",
+            "signs": "a saving and a net present value are above 0 where the option saves money",
         },
         "asked": _asked(comparison),
         **agreement_json(comparison),
@@ -197,29 +200,49 @@ def _emissions(option: Prospect) -> dict[str, Any]:
 
 
 def _money(comparison: Comparison, option: Prospect) -> dict[str, Any] | None:
-    account = option.account
+    account, money = option.account, comparison.case.money
     appraisal, yearly, saving, first = account.appraisal, account.yearly_cost, account.saving, option.three.first_cost
-    if comparison.case.money is None or appraisal is None or yearly is None or saving is None or first is None:
+    if money is None or appraisal is None or yearly is None or saving is None or first is None:
         return None
     low, base, high = first_cost_range(option) or (None, None, None)
-    never = appraisal.payback_years is not None and math.isinf(float(appraisal.payback_years))
+    found = payback(option)
     return {
         "first_cost_currency": {"low": low, "base": base, "high": high},
+        "first_cost_state": first.state.value,
         "first_cost_items": _items(first),
-        "first_cost_missing": first.missing or None,
+        "first_cost_missing": _missing(first.missing),
         "first_cost_not_counted": list(first.not_counted),
         "yearly_cost_currency": {code: number(part) for code, part in yearly.parts.items()},
-        "yearly_cost_missing": dict(yearly.missing),
+        "yearly_cost_total_currency": number(yearly.sum.known),
+        "yearly_cost_state": yearly.sum.state.value,
+        "yearly_cost_missing": _missing(yearly.missing.values()),
+        "life_cost_currency": number(appraisal.life_cost.known),
+        "life_cost_state": appraisal.life_cost.state.value,
+        "life_cost_missing": _missing(appraisal.life_cost.missing),
+        "residual_value_currency": number(appraisal.residual),
+        "new_plant_life_years": number(account.first_cost.plant_life_years) if account.first_cost else None,
+        "discount_rate": money.discount_rate,
+        "comparison_state": appraisal.state.value,
+        "excluded_items": _missing(appraisal.excluded),
+        "yearly_saving_state": saving.state.value,
         "yearly_saving_currency": number(saving.total),
-        "yearly_saving_not_counted": list(saving.not_counted),
-        "payback_years": number(appraisal.payback_years),
-        "payback_words": NEVER if never else payback_words(appraisal),
+        "yearly_saving_of_known_items_currency": number(saving.of_known),
+        "yearly_saving_not_counted": [item.code for item in saving.not_counted],
+        "payback_state": found.state.value,
+        "payback_years": found.years,
+        "payback_words": payback_words(found),
         "net_present_value_currency": number(appraisal.npv),
+        "net_present_value_of_known_items_currency": number(appraisal.npv_of_known),
+        "abatement_state": abatement_of(appraisal).value,
         "cost_per_tonne_CO2e_currency": number(appraisal.cost_per_t),
-        "extra_cost_by_year_currency": number(appraisal.extra_cost),
-        "life_cost_against_as_is_currency": number(life_cost(option)),
-        "missing": missing_words(option, "cost") or None,
+        "cumulative_saving_by_year_currency": number(appraisal.saved),
+        "missing": missing_words(option, "npv") or None,
     }
+
+
+def _missing(items: Iterable[Missing]) -> dict[str, dict[str, Any]]:
+    """Return items that are missing by their codes, each with the keys that give it and the reason beside prices."""
+    return {item.code: {"keys": list(item.keys), "reason": item.reason or None} for item in items}
 
 
 def _items(first: FirstCost) -> list[dict[str, Any]]:
@@ -239,8 +262,8 @@ def _items(first: FirstCost) -> list[dict[str, Any]]:
 def _against(as_is: Prospect, option: Prospect) -> dict[str, Any] | None:
     if option is as_is:
         return None
-    found = {name: difference(as_is, option, name) for name in ("energy", "emissions", "cost")}
-    unit = {"energy": "J", "emissions": "kg", "cost": "currency"}
+    found = {name: difference(as_is, option, name) for name in ("energy", "emissions")}
+    unit = {"energy": "J", "emissions": "kg"}
     return {
         **{
             f"{name}_{unit[name]}": {
@@ -252,6 +275,7 @@ def _against(as_is: Prospect, option: Prospect) -> dict[str, Any] | None:
             for name, change in found.items()
         },
         "saving_is_alike": is_alike(as_is, option, "saving"),
+        "npv_is_alike": is_alike(as_is, option, "npv"),
     }
 
 
@@ -265,19 +289,22 @@ def _certainty(option: Prospect) -> dict[str, Any] | None:
         "uses_less_probability": found.uses_less,
         "cheaper_probability": found.cheaper,
         "cleaner_probability": found.cleaner,
-        "quantiles": _quantiles(found),
+        "pays_back_probability": found.pays_back,
+        "quantiles": _quantiles(found, payback(option).life_years),
         "swings": {
             RENAMED.get(name, name): [_swing(name, swing) for swing in swings] for name, swings in found.swings.items()
         },
     }
 
 
-def _quantiles(found: Certainty) -> Mapping[str, Any]:
+def _quantiles(found: Certainty, life: float | None) -> Mapping[str, Any]:
     result: dict[str, Any] = {}
     for name, values in found.quantiles.items():
         ends: dict[str, Any] = {key: _amount(name, getattr(values, key)) for key in ("p10", "p50", "p90")}
         if name == "payback_years":
-            ends |= {f"{key}_words": NEVER for key in ("p10", "p50", "p90") if math.isinf(getattr(values, key))}
+            ends |= {
+                f"{key}_state": payback_of(getattr(values, key), life).state.value for key in ("p10", "p50", "p90")
+            }
         result[RENAMED.get(name, name)] = ends
     return result
 

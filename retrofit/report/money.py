@@ -2,19 +2,43 @@
 
 from __future__ import annotations
 
-import math
 from collections.abc import Callable
 from dataclasses import dataclass
 
-from retrofit.checks.outlook import currency, payback_text, per_tonne_text, rounded_text
-from retrofit.checks.prospects import Prospect, first_cost_range, is_alike, life_cost
-from retrofit.report.prospect_rows import Options, Read, missing_of, shown_name
+from retrofit.checks.money_words import (
+    AT_LEAST_WORDS,
+    INCOMPLETE,
+    INCOMPLETE_WORDS,
+    item_name,
+    item_names,
+    missing_items_words,
+    payback_words,
+    sum_text,
+    years_text,
+)
+from retrofit.checks.outlook import currency, discounting_words, per_tonne_text, rounded_text
+from retrofit.checks.prospects import (
+    Prospect,
+    compared,
+    first_cost_range,
+    is_alike,
+    life_of_result,
+    missing_words,
+    payback,
+    payback_quantiles,
+    sum_of_option,
+)
+from retrofit.report.certainty import chance
+from retrofit.report.prospect_rows import Options, Read, shown_name
 from retrofit.report.rows import near
 from retrofit.report.table import Cell, Group, Row, Table
 from retrofit.study import Comparison
-from retrofit.study.money import PARTS
+from retrofit.study.money import PARTS, AbatementState, PaybackState, abatement_of
 from retrofit.study.spread import at
+from retrofit.study.sums import ComparisonState, SumState
 from retrofit.units import MISSING, format_number
+
+BAND = "P10 · P50 · P90".replace(" ", "\N{NO-BREAK SPACE}")
 
 
 @dataclass(frozen=True)
@@ -39,42 +63,53 @@ def money_table(comparison: Comparison, options: Options) -> Table | None:
         return None
     unit = currency(comparison)
     groups = (
-        Group("yearly", "A year", _yearly(options, unit)),
-        Group("life", "Paid once, and the remaining life", (*_first(options, unit), *_life(comparison, options, unit))),
+        Group("yearly", "Each year", _yearly(options, unit)),
+        Group("once", "Paid once, and paid back", (*_first(options, unit), *_back(comparison, options))),
+        Group("life", "Life cost and net present value", _life(comparison, options, unit)),
     )
     basis = (
-        f"Basis: {unit} as the case gives them, prices as today over the remaining life; savings against the plant as "
-        "it is. A part that is known for one of the two alone is left out of the saving, and named below."
+        f"Basis: {unit} as the case gives them, prices as today over the remaining life. Annual saving and net present "
+        "value are against the plant as it is; above 0 an option saves money. A sum without one of its items is at "
+        f"least (≥) what is known of it; where an item is known for only one of two options they are {INCOMPLETE}, and "
+        "nothing is said of which is cheaper."
     )
     return Table("money", "What it costs and saves", basis, options.names, groups, options.notes.listed())
 
 
-def _first(options: Options, unit: str) -> tuple[Row, ...]:
-    def base(option: Prospect) -> float | None:
-        first = option.account.first_cost
-        return None if first is None or first.total is None else float(first.total)
+def _sum_cell(options: Options, option: Prospect, name: str, note: str = "") -> Cell:
+    """Return a sum: its number, the sign for at least where an item is missing, or unknown."""
+    found = sum_of_option(option, name)
+    if found is None or found.known is None:
+        return options.unknown(option, missing_items_words(found.missing) if found else missing_words(option, "npv"))
+    is_short = found.state is SumState.AT_LEAST
+    notes = [f"{AT_LEAST_WORDS}: {missing_items_words(found.missing)}"] if is_short else []
+    notes += [note] if note else []
+    marks = tuple(options.notes.mark(shown_name(option), text) for text in notes)
+    return Cell(sum_text(found.state, rounded_text(float(found.known))), marks=marks)
 
-    def why(option: Prospect) -> str:
-        return option.account.first_cost.missing if option.account.first_cost else ""
+
+def _first(options: Options, unit: str) -> tuple[Row, ...]:
+    def base(option: Prospect) -> Cell:
+        first = option.account.first_cost
+        codes = first.not_counted if first else ()
+        note = f"no sum given for any option, so not counted: {_listed(codes)}" if codes else ""
+        return _sum_cell(options, option, "first_cost", note)
 
     def spread(option: Prospect) -> Cell:
-        found = first_cost_range(option)
-        is_range = found is not None and found[0] < found[2]
-        return Cell(f"{rounded_text(found[0])} to {rounded_text(found[2])}" if found and is_range else MISSING)
-
-    def note(option: Prospect) -> str:
-        first = option.account.first_cost
-        parts = first.not_counted if first else ()
-        return f"no sum given, so not counted: {_listed(parts)}" if parts else ""
+        found, first = first_cost_range(option), option.account.first_cost
+        if found is None or first is None or found[0] >= found[2]:
+            return Cell(MISSING)
+        return Cell(sum_text(first.state, f"{rounded_text(found[0])} to {rounded_text(found[2])}"))
 
     return (
-        options.row("First cost", unit, base, rounded_text, why, note),
+        Row("First cost", unit, tuple(base(option) for option in options.all)),
         Row("Every item low to every high", unit, tuple(spread(option) for option in options.all)),
+        options.three_quantiles(f"First cost: {BAND}", unit, "first_cost", float),
     )
 
 
-def _listed(names: tuple[str, ...]) -> str:
-    return ", ".join(name[:1].lower() + name[1:] for name in names)
+def _listed(codes: tuple[str, ...]) -> str:
+    return ", ".join(item_name(code) for code in codes)
 
 
 def _yearly(options: Options, unit: str) -> tuple[Row, ...]:
@@ -86,21 +121,33 @@ def _yearly(options: Options, unit: str) -> tuple[Row, ...]:
     as_is = options.all[0]
 
     def saving(option: Prospect) -> Cell:
-        found = option.account.saving
+        found, amount = option.account.saving, compared(option, "saving").amount
         if option is as_is:
             return Cell(MISSING)
-        if found is None or found.total is None:
-            return options.unknown(option, missing_of("saving")(option) or "energy")
-        text = rounded_text(float(found.total), signed=True)
-        marks = (options.notes.mark(shown_name(option), _not_counted(found.not_counted)),) if found.not_counted else ()
+        if found is None or amount is None:
+            return _not_compared(options, option, "saving")
+        text = rounded_text(amount, signed=True)
+        left_out = f"not counted, since it is known for neither: {item_names(found.not_counted)}"
+        marks = (options.notes.mark(shown_name(option), left_out),) if found.not_counted else ()
         return Cell(near(text) if is_alike(as_is, option, "saving") else text, marks=marks)
 
-    return (*rows, Row("Saving against the plant as it is", unit, tuple(saving(option) for option in options.all)))
+    return (
+        *rows,
+        Row("Annual cost", unit, tuple(_sum_cell(options, option, "yearly_cost") for option in options.all)),
+        Row("Annual saving against the plant as it is", unit, tuple(saving(option) for option in options.all)),
+        options.three_quantiles(f"Annual saving: {BAND}", unit, "yearly_saving", float, signed=True),
+    )
 
 
-def _not_counted(parts: tuple[str, ...]) -> str:
-    """Return which parts are not counted, without what each would need, which may differ by option."""
-    return f"not counted in the saving, not known on both sides: {', '.join(part.partition(' (')[0] for part in parts)}"
+def _not_compared(options: Options, option: Prospect, quantity: str) -> Cell:
+    """Return a cell of what is not compared: incomplete or unknown, with what it needs in a note."""
+    found, needs = compared(option, quantity), missing_words(option, quantity)
+    if found.state is not ComparisonState.INCOMPLETE or found.of_known is None:
+        return options.unknown(option, needs)
+    name = "annual saving" if quantity == "saving" else "net present value"
+    text = f"{INCOMPLETE}: {INCOMPLETE_WORDS}. Needs {needs}. The items known for both come to"
+    mark = options.notes.mark(shown_name(option), f"{text} {rounded_text(found.of_known, signed=True)} ({name})")
+    return Cell(INCOMPLETE, is_number=False, marks=(mark,))
 
 
 def _part(option: Prospect, code: str) -> float | None:
@@ -113,63 +160,80 @@ def _reading(code: str) -> Read:
 
 
 def _part_missing(code: str) -> Callable[[Prospect], str]:
-    return lambda option: option.account.yearly_cost.missing.get(code, "") if option.account.yearly_cost else ""
+    def why(option: Prospect) -> str:
+        found = option.account.yearly_cost.missing.get(code) if option.account.yearly_cost else None
+        return missing_items_words((found,)) if found else ""
+
+    return why
+
+
+def _back(comparison: Comparison, options: Options) -> tuple[Row, ...]:
+    as_is = options.all[0]
+    base = Row("Simple payback", "years", tuple(_payback(options, option) for option in options.all))
+    if not life_of_result(comparison).certainty:
+        return (base,)
+    return (
+        base,
+        Row(f"Payback: {BAND}", "years", tuple(_paybacks(option, as_is) for option in options.all)),
+        Row("Probability of paying back", "%", tuple(_pays_back(option, as_is) for option in options.all)),
+    )
 
 
 def _life(comparison: Comparison, options: Options, unit: str) -> tuple[Row, ...]:
-    as_is = options.all[0]
+    as_is, how = options.all[0], discounting_words(comparison)
 
-    def cost(option: Prospect) -> Cell:
-        extra = life_cost(option)
+    def npv(option: Prospect) -> Cell:
+        amount = compared(option, "npv").amount
         if option is as_is:
             return Cell(MISSING)
-        if extra is None:
-            return options.unknown(option, missing_of("cost")(option))
-        text = rounded_text(extra, signed=True)
-        return Cell(near(text) if is_alike(as_is, option, "cost") else text)
+        if amount is None:
+            return _not_compared(options, option, "npv")
+        text = rounded_text(amount, signed=True)
+        return Cell(near(text) if is_alike(as_is, option, "npv") else text)
 
-    rows = [
-        Row("Simple payback", "years", tuple(_payback(options, option) for option in options.all)),
-        Row("Cost against the plant as it is, with first cost", unit, tuple(cost(o) for o in options.all)),
-        options.ranges("The same: 8 of 10 draws within", unit, "life_saving", lambda value: -value),
-    ]
-    if comparison.case.money is not None and comparison.case.money.discount_rate is not None:
-        rate = format_number(100.0 * comparison.case.money.discount_rate, 1)
-        label = f"Net present value at {rate}\N{NO-BREAK SPACE}%"
-        rows.append(Row(label, unit, tuple(_npv(options, option) for option in options.all)))
-    rows.append(
-        Row("Cost of CO2e avoided", f"{unit}/t", tuple(_per_tonne(comparison, options, o) for o in options.all))
+    return (
+        Row("Residual value of the new plant", unit, tuple(_residual(options, option) for option in options.all)),
+        Row(f"Life cost, {how}", unit, tuple(_sum_cell(options, option, "life_cost") for option in options.all)),
+        Row(f"Net present value, {how}", unit, tuple(npv(option) for option in options.all)),
+        options.three_quantiles(f"Net present value: {BAND}", unit, "npv", float, signed=True),
+        Row("Cost of CO2e avoided", f"{unit}/t", tuple(_per_tonne(comparison, options, o) for o in options.all)),
+        options.three_quantiles(f"Cost of CO2e avoided: {BAND}", f"{unit}/t", "cost_per_t", float),
     )
-    return tuple(rows)
+
+
+def _residual(options: Options, option: Prospect) -> Cell:
+    """Return what a new plant is worth at the end of the remaining life, with how that comes about."""
+    appraisal, first, own = option.account.appraisal, option.account.first_cost, option.account.plan.option
+    if appraisal is None or appraisal.residual is None or first is None or first.plant_life_years is None:
+        return Cell(MISSING)
+    how = f"by straight line over its life of {float(first.plant_life_years):g} years"
+    text = f"residual value at the end of the remaining life {'as given' if own and own.residual_value else how}"
+    return Cell(rounded_text(float(appraisal.residual)), marks=(options.notes.mark(shown_name(option), text),))
 
 
 def _payback(options: Options, option: Prospect) -> Cell:
-    """Return the payback: a number of years, or in words that it does not come."""
-    appraisal, as_is = option.account.appraisal, options.all[0]
+    """Return the payback: a number of years, or its state in words."""
+    found, as_is = payback(option), options.all[0]
     if option is as_is:
         return Cell(MISSING)
-    if appraisal is None or appraisal.payback_years is None:
-        return options.unknown(option, missing_of("cost")(option))
-    years = float(appraisal.payback_years)
-    words = payback_text(option)
-    if math.isinf(years):
-        return Cell("none", is_number=False, marks=(options.notes.mark(shown_name(option), words),))
-    if years == 0.0:
-        return Cell("nothing to pay", is_number=False)
-    is_beyond = appraisal.life_years is not None and years > float(appraisal.life_years)
-    marks = (options.notes.mark(shown_name(option), f"payback {words.partition(', ')[2]}"),) if is_beyond else ()
-    text = format_number(years, 1)
+    if found.years is None and found.state is PaybackState.UNKNOWN:
+        return _not_compared(options, option, "npv")
+    is_said = found.state in (PaybackState.NEVER, PaybackState.BEYOND, PaybackState.UNKNOWN)
+    marks = (options.notes.mark(shown_name(option), payback_words(found)),) if is_said else ()
+    if found.years is None:
+        return Cell(found.state.value, is_number=False, marks=marks)
+    text = years_text(found)
     return Cell(near(text) if is_alike(as_is, option, "saving") else text, marks=marks)
 
 
-def _npv(options: Options, option: Prospect) -> Cell:
-    appraisal = option.account.appraisal
-    if option is options.all[0]:
-        return Cell(MISSING)
-    if appraisal is None or appraisal.npv is None:
-        return options.unknown(option, missing_of("cost")(option))
-    text = rounded_text(float(appraisal.npv), signed=True)
-    return Cell(near(text) if is_alike(options.all[0], option, "cost") else text)
+def _paybacks(option: Prospect, as_is: Prospect) -> Cell:
+    found = None if option is as_is else payback_quantiles(option)
+    return Cell(MISSING if found is None else " · ".join(years_text(end) for end in found))
+
+
+def _pays_back(option: Prospect, as_is: Prospect) -> Cell:
+    value = None if option is as_is or option.certainty is None else option.certainty.pays_back
+    return Cell(MISSING if value is None else chance(value))
 
 
 def _per_tonne(comparison: Comparison, options: Options, option: Prospect) -> Cell:
@@ -177,14 +241,16 @@ def _per_tonne(comparison: Comparison, options: Options, option: Prospect) -> Ce
     appraisal = option.account.appraisal
     if option is options.all[0]:
         return Cell(MISSING)
-    words = per_tonne_text(comparison, option)
-    if words.startswith("unknown"):
-        return options.unknown(option, words.partition(": ")[2])
-    if words.startswith("none") or appraisal is None or appraisal.cost_per_t is None:
-        return Cell("none", is_number=False, marks=(options.notes.mark(shown_name(option), words),))
-    value = float(appraisal.cost_per_t)
-    marks = (options.notes.mark(shown_name(option), "saves money and CO2e: a cost below 0"),) if value < 0.0 else ()
-    return Cell(rounded_text(value), marks=marks)
+    state = AbatementState.UNKNOWN if appraisal is None else abatement_of(appraisal)
+    if state is AbatementState.NONE_AVOIDED:
+        mark = options.notes.mark(shown_name(option), per_tonne_text(comparison, option))
+        return Cell("none avoided", is_number=False, marks=(mark,))
+    if appraisal is None or appraisal.cost_per_t is None or state is AbatementState.UNKNOWN:
+        no_emissions = missing_words(option, "emissions")
+        return options.unknown(option, no_emissions) if no_emissions else _not_compared(options, option, "npv")
+    is_saving = state is AbatementState.SAVES
+    marks = (options.notes.mark(shown_name(option), "below 0: saves money and CO2e"),) if is_saving else ()
+    return Cell(rounded_text(float(appraisal.cost_per_t)), marks=marks)
 
 
 def cost_items(options: Options) -> tuple[Costs, ...]:
@@ -205,11 +271,10 @@ def _costs(option: Prospect) -> Costs | None:
     items = tuple(
         (item.name, *(_whole(at(item.amount, place)) for place in range(3)), item.made_from) for item in first.items
     )
-    if first.total is None:
-        total = ("unknown",) * 3
-    else:
-        total = tuple(_whole(at(first.total, place)) for place in range(3))  # type: ignore[assignment]
-    return Costs(shown_name(option), items, total, first.missing, first.not_counted)  # type: ignore[arg-type]
+    found = first_cost_range(option)
+    ends = ("unknown",) * 3 if found is None else tuple(sum_text(first.state, _whole(end)) for end in found)
+    missing, not_counted = missing_items_words(first.missing), tuple(item_name(code) for code in first.not_counted)
+    return Costs(shown_name(option), items, (ends[0], ends[1], ends[2]), missing, not_counted)  # type: ignore[arg-type]
 
 
 def _whole(amount: float) -> str:

@@ -16,7 +16,7 @@ from retrofit.units import MISSING
 Read = Callable[[Prospect], float | None]
 # Results that the plant as it is has against itself.
 AGAINST_AS_IS = (
-    "energy_saving_J", "avoided_t", "first_cost", "yearly_saving", "payback_years", "npv", "life_saving", "cost_per_t",
+    "energy_saving_J", "avoided_t", "first_cost", "yearly_saving", "payback_years", "npv", "cost_per_t",
 )  # fmt: skip
 SAME = {"as it is": "", "kept, with its repairs": " kept"}
 
@@ -69,7 +69,7 @@ class Options:
         # So that options that lack the same share a note.
         told = why.replace(price, "its price, in `refrigerant_price`").replace(own, "its table in [options]")
         text = spelled(told)
-        marks = (self.notes.mark(shown_name(option), f"unknown, for want of {text}"),) if why else ()
+        marks = (self.notes.mark(shown_name(option), f"unknown: missing {text}"),) if why else ()
         return Cell(UNKNOWN, is_number=False, marks=marks)
 
     def changes(self, label: str, quantity: str) -> Row:
@@ -111,7 +111,9 @@ class Options:
 
         return Row(label, unit, tuple(cell(option) for option in self.all))
 
-    def three_quantiles(self, label: str, unit: str, name: str, to_number: Callable[[float], float]) -> Row:
+    def three_quantiles(
+        self, label: str, unit: str, name: str, to_number: Callable[[float], float], signed: bool = False
+    ) -> Row:
         """Return a row of the values that 10, 50 and 90 % of the draws stay below, together in a cell.
 
         Args:
@@ -119,11 +121,12 @@ class Options:
             unit: Their unit.
             name: Name of the result.
             to_number: From its unit to that of the row.
+            signed: Whether a plus sign stands before what is above 0. [-]
         """
 
         def cell(option: Prospect) -> Cell:
             found = self._known(option, name)
-            return Cell(MISSING if found is None else " · ".join(range_end(end, to_number) for end in found))
+            return Cell(MISSING if found is None else " · ".join(range_end(end, to_number, signed) for end in found))
 
         return Row(label, unit, tuple(cell(option) for option in self.all))
 
@@ -153,14 +156,15 @@ class Options:
         return Row(label, "", tuple(Cell(say(option), is_number=False) for option in self.all))
 
 
-def range_end(value: float, to_number: Callable[[float], float]) -> str:
+def range_end(value: float, to_number: Callable[[float], float], signed: bool = False) -> str:
     """Return an end of a range of draws; a payback that never comes reads so.
 
     Args:
         value: The end. [unit of the result]
         to_number: From that unit to the one shown.
+        signed: Whether a plus sign stands before what is above 0. [-]
     """
-    return rounded_text(to_number(value)) if math.isfinite(value) else "never"
+    return rounded_text(to_number(value), signed) if math.isfinite(value) else "never"
 
 
 def shown_name(option: Prospect) -> str:

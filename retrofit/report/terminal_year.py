@@ -6,11 +6,24 @@ import math
 from collections.abc import Callable, Iterator, Sequence
 
 from retrofit.checks.answer import Matter
+from retrofit.checks.money_words import (
+    AT_LEAST,
+    INCOMPLETE,
+    INCOMPLETE_WORDS,
+    NO_LIFE,
+    item_name,
+    item_names,
+    missing_items_words,
+    sum_text,
+    years_text,
+)
 from retrofit.checks.outlook import (
     KG_PER_T,
     TOLD,
     UNKNOWN,
     currency,
+    discounting_words,
+    life_text,
     outlook,
     percent,
     result_text,
@@ -19,24 +32,27 @@ from retrofit.checks.outlook import (
 )
 from retrofit.checks.prospects import (
     Prospect,
+    compared,
     difference,
     is_alike,
     leading,
-    life_cost,
     life_of_result,
-    missing_words,
+    payback,
     probability,
     prospects,
     quantile,
+    sum_of_option,
 )
 from retrofit.checks.reading_words import contradiction_words, duty_words
 from retrofit.figures.tornado import limits_text
-from retrofit.report.certainty import method
+from retrofit.report.certainty import chance, method
 from retrofit.report.emissions import check_months
 from retrofit.report.terminal import cautions_text
 from retrofit.report.terminal_plant import NEAR, NOTHING, Emphasis
 from retrofit.report.text_table import Column, paragraph, text_table
 from retrofit.study import Comparison
+from retrofit.study.money import AbatementState, PaybackState, abatement_of
+from retrofit.study.sums import ComparisonState, Sum
 from retrofit.study.year import YearRun
 from retrofit.units import UnitSystem, format_number, listed, shown, told
 
@@ -116,7 +132,7 @@ def _change(as_is: Prospect, options: Sequence[Prospect], quantity: str) -> list
 
 def _span(options: Sequence[Prospect], name: str, to_number: Callable[[float], float]) -> list[Cells]:
     """Return columns with the ends of the range in which 8 of 10 draws lie; none without draws."""
-    found = [None if name == "life_saving" and option is options[0] else quantile(option, name) for option in options]
+    found = [quantile(option, name) for option in options]
     if not any(found):
         return []
     ends = ((0, "10 % of"), (2, "90 % of"))
@@ -124,6 +140,27 @@ def _span(options: Sequence[Prospect], name: str, to_number: Callable[[float], f
         (Column(head, "draws <"), [NOTHING if ends_ is None else _end(ends_[place], to_number) for ends_ in found])
         for place, head in ends
     ]
+
+
+def _percentiles(options: Sequence[Prospect], head: str, name: str) -> list[Cells]:
+    """Return columns with the 10th, 50th and 90th percentile of a number against the plant as it is; none if unknown.
+
+    Args:
+        options: The options, the plant as it is first.
+        head: What the number is called.
+        name: Its name among the results of the samples.
+    """
+    found = [None if option is options[0] else quantile(option, name) for option in options]
+    if not any(found):
+        return []
+    return [
+        (Column(head, label), [NOTHING if ends is None else _signed_end(ends[place]) for ends in found])
+        for place, label in enumerate(("P10", "P50", "P90"))
+    ]
+
+
+def _signed_end(value: float) -> str:
+    return rounded_text(value, signed=True)
 
 
 def _end(value: float, to_number: Callable[[float], float]) -> str:
@@ -244,99 +281,120 @@ def _money(comparison: Comparison, options: Sequence[Prospect], columns: int, st
     unit = currency(comparison)
     as_is = options[0]
 
-    def first(option: Prospect) -> float | None:
-        cost = option.account.first_cost
-        return None if cost is None or cost.total is None else float(cost.total)
+    def sums(name: str) -> list[str]:
+        return [_sum(sum_of_option(option, name)) for option in options]
 
-    def yearly(option: Prospect) -> float | None:
-        cost = option.account.yearly_cost
-        return None if cost is None or cost.total is None else float(cost.total)
-
-    cells: list[Cells] = [
-        (Column("First cost", unit), _told(options, first, rounded_text)),
-        (Column("A year", unit), _told(options, yearly, rounded_text)),
-        (Column("Saves a", "year"), [_signed(as_is, option, "saving", _saving(option)) for option in options]),
+    paid: list[Cells] = [
+        (Column("First cost", unit), sums("first_cost")),
+        (Column("Annual", "cost"), sums("yearly_cost")),
+        (Column("Annual", "saving"), [_signed(as_is, option, "saving") for option in options]),
         (Column("Payback", "years"), [_payback(as_is, option) for option in options]),
-        (Column("Over the", "life"), [_signed(as_is, option, "cost", life_cost(option)) for option in options]),
-        *_span(options, "life_saving", lambda value: value),
-        (Column("Per t CO2e", "avoided"), [_per_tonne(as_is, option) for option in options]),
     ]
-    if comparison.case.money.discount_rate is not None:
-        cells.insert(5, (Column("NPV", unit), [_signed(as_is, option, "cost", _npv(option)) for option in options]))
-    heading = strong(f"Money in {unit}, prices as today, against the plant as it is")
-    notes = list(dict.fromkeys(_money_notes(options)))
-    note = (
-        "A year: the parts known. Over the life: what it costs more, first cost included; draws: what it saves. "
-        "Below 0 per t: it saves money too."
+    if life_of_result(comparison).certainty:
+        paid.append((Column("Pays", "back, %"), [_pays_back(as_is, option) for option in options]))
+    whole: list[Cells] = [
+        (Column("Life cost", unit), sums("life_cost")),
+        (Column("NPV", unit), [_signed(as_is, option, "npv") for option in options]),
+        *_percentiles(options, "NPV", "npv"),
+        (Column(f"{unit} per t", "CO2e avoided"), [_per_tonne(as_is, option) for option in options]),
+    ]
+    life = life_text(as_is.account.tewi)
+    signs = "Annual saving and net present value (NPV) above 0: the option saves money."
+    costs = "Base values, with the percentiles P10, P50 and P90 of the NPV. Cost per t below 0: it saves money too."
+    tables = (
+        (
+            f"Money in {unit}, prices as today, saving against the plant as it is",
+            paid,
+            (signs, *_signs_of_gaps(options)),
+        ),
+        (
+            f"Life cost and net present value over {life}, {discounting_words(comparison)}",
+            whole,
+            (costs, *dict.fromkeys(_money_notes(options))),
+        ),
     )
-    return "\n".join([heading, _table(options, cells), *(paragraph(text, columns) for text in (note, *notes))])
+    return "\n\n".join(
+        "\n".join([strong(heading), _table(options, cells), *(paragraph(text, columns) for text in texts)])
+        for heading, cells, texts in tables
+    )
 
 
-def _saving(option: Prospect) -> float | None:
-    found = option.account.saving
-    return None if found is None or found.total is None else float(found.total)
+def _signs_of_gaps(options: Sequence[Prospect]) -> Iterator[str]:
+    """Yield what the signs of an incomplete sum or comparison mean, where there is one."""
+    if any(option.account.appraisal and option.account.appraisal.life_cost.missing for option in options):
+        yield f"{AT_LEAST.strip()} at least: an item is missing. {INCOMPLETE}: {INCOMPLETE_WORDS}."
 
 
-def _npv(option: Prospect) -> float | None:
-    found = option.account.appraisal
-    return None if found is None or found.npv is None else float(found.npv)
-
-
-def _signed(as_is: Prospect, option: Prospect, quantity: str, value: float | None) -> str:
+def _pays_back(as_is: Prospect, option: Prospect) -> str:
+    value = probability(option, "pays_back")
     if option is as_is:
         return NOTHING
+    return _not_compared(option, "npv") if value is None else chance(value)
+
+
+def _sum(found: Sum | None) -> str:
+    return UNKNOWN if found is None or found.known is None else sum_text(found.state, rounded_text(float(found.known)))
+
+
+def _not_compared(option: Prospect, quantity: str) -> str:
+    """Return the state of a comparison that gives no number."""
+    return INCOMPLETE if compared(option, quantity).state is ComparisonState.INCOMPLETE else UNKNOWN
+
+
+def _signed(as_is: Prospect, option: Prospect, quantity: str) -> str:
+    if option is as_is:
+        return NOTHING
+    value = compared(option, quantity).amount
     if value is None:
-        return UNKNOWN
+        return _not_compared(option, quantity)
     text = rounded_text(value, signed=True)
     return f"{NEAR} {text}" if is_alike(as_is, option, quantity) else text
 
 
 def _payback(as_is: Prospect, option: Prospect) -> str:
-    appraisal = option.account.appraisal
+    found = payback(option)
     if option is as_is:
         return NOTHING
-    if appraisal is None or appraisal.payback_years is None:
-        return UNKNOWN
-    years = float(appraisal.payback_years)
-    if not math.isfinite(years):
-        return NONE
-    is_beyond = appraisal.life_years is not None and years > float(appraisal.life_years)
+    if found.years is None:
+        return _not_compared(option, "npv") if found.state is PaybackState.UNKNOWN else found.state.value
     near = f"{NEAR} " if is_alike(as_is, option, "saving") else ""
-    return f"{near}{format_number(years, 1)}{' beyond' if is_beyond else ''}"
+    beyond = f" {found.state.value}" if found.state is PaybackState.BEYOND else ""
+    return f"{near}{years_text(found)}{beyond}"
 
 
 def _per_tonne(as_is: Prospect, option: Prospect) -> str:
     appraisal = option.account.appraisal
     if option is as_is:
         return NOTHING
-    if appraisal is None or appraisal.avoided_t is None:
-        return UNKNOWN
-    if float(appraisal.avoided_t) <= 0.0:
+    state = AbatementState.UNKNOWN if appraisal is None else abatement_of(appraisal)
+    if state is AbatementState.NONE_AVOIDED:
         return NONE
-    return UNKNOWN if appraisal.cost_per_t is None else rounded_text(float(appraisal.cost_per_t))
+    if appraisal is None or appraisal.cost_per_t is None or state is AbatementState.UNKNOWN:
+        return _not_compared(option, "npv")
+    return rounded_text(float(appraisal.cost_per_t))
 
 
 def _money_notes(options: Sequence[Prospect]) -> Iterator[str]:
     """Yield what is not counted or not known, with the options it is true of."""
     found: dict[str, list[str]] = {}
-    for option in options[1:]:
-        for text in _left_open(option):
+    for option in options:
+        for text in _left_open(option, options[0]):
             found.setdefault(text, []).append(option.name)
     for text, names in found.items():
         yield f"{text} ({', '.join(names)})."
 
 
-def _left_open(option: Prospect) -> Iterator[str]:
-    saving, first = option.account.saving, option.account.first_cost
-    if saving is not None and saving.not_counted:
-        parts = ", ".join(part.partition(" (")[0] for part in saving.not_counted)
-        yield f"Not counted in the saving, not known on both sides: {parts}"
+def _left_open(option: Prospect, as_is: Prospect) -> Iterator[str]:
+    saving, first, appraisal = option.account.saving, option.account.first_cost, option.account.appraisal
+    if appraisal is not None and appraisal.life_cost.missing:
+        yield f"Missing: {missing_items_words(appraisal.life_cost.missing)}"
+    if saving is not None and saving.not_counted and option is not as_is:
+        yield f"Not counted, since it is known for neither: {item_names(saving.not_counted)}"
     if first is not None and first.not_counted:
-        parts = ", ".join(name[:1].lower() + name[1:] for name in first.not_counted)
-        yield f"No sum given, so not counted in the first cost: {parts}"
-    if missing := missing_words(option, "cost"):
-        own = f"[options.{option.entry.refrigerant.designation}]"
-        yield f"Unknown for want of {missing.replace(own, 'its table in [options]')}"
+        parts = ", ".join(item_name(code) for code in first.not_counted)
+        yield f"No sum given for any option, so not counted in the first cost: {parts}"
+    if appraisal is not None and appraisal.life_years is None:
+        yield f"No life cost or net present value: {NO_LIFE}"
 
 
 # How sure
@@ -354,6 +412,7 @@ def _certainty(comparison: Comparison, options: Sequence[Prospect], strong: Emph
         column("Carries the", "cooling", "carries"),
         column("Uses less", "electricity", "uses_less"),
         column("Costs less", "over the life", "cheaper"),
+        column("Pays back", "in the life", "pays_back"),
         column("Warms less", "over the life", "cleaner"),
     ]
     heading = strong(f"How sure: share of {life.draws} draws of the inputs, %, against the plant as it is")
@@ -368,9 +427,8 @@ def _probability(as_is: Prospect, option: Prospect, name: str) -> str:
     if name == "carries" and option.account.plan.family == "replace":
         return "sized for it"
     if value is None:
-        return UNKNOWN
-    whole = round(100.0 * value)
-    return "< 1" if whole == 0 and value > 0.0 else "> 99" if whole == 100 and value < 1.0 else str(whole)
+        return _not_compared(option, "npv") if name in ("cheaper", "pays_back") else UNKNOWN
+    return chance(value)
 
 
 def _swings(comparison: Comparison, units: UnitSystem, strong: Emphasis) -> str:

@@ -12,7 +12,8 @@ from retrofit.study import Comparison
 
 SERIES = frozenset((
     "year.monthly_J", "year.by_air", "year.map", "emissions.years", "emissions.direct_by_year_kg",
-    "emissions.indirect_by_year_kg", "money.first_cost_items", "money.extra_cost_by_year_currency", "certainty.swings",
+    "emissions.indirect_by_year_kg", "money.first_cost_items", "money.cumulative_saving_by_year_currency",
+    "certainty.swings",
 ))  # fmt: skip
 
 

@@ -8,12 +8,13 @@ from dataclasses import dataclass
 
 from retrofit.study.emissions import Tewi, tewi
 from retrofit.study.first_cost import FirstCost, first_cost
-from retrofit.study.money import Appraisal, Saving, YearlyCost, appraise, yearly_cost, yearly_saving
+from retrofit.study.money import Appraisal, Saving, YearlyCost, appraise, counted_alike, yearly_cost, yearly_saving
 from retrofit.study.plan import Plan, Use, plan_as_is, plan_for
 from retrofit.study.result import Comparison
 from retrofit.study.spread import Pick, low_base_high
 
 NOT_KNOWN = Use()
+AS_IS = ""  # the plant as it is, among designations
 
 
 @dataclass(frozen=True)
@@ -59,32 +60,23 @@ def accounts(
         pick: What to take of each input's spread: low, base and high if left out.
         on: Day the remaining life begins if the case gives no date of change.
     """
-    existing = comparison.existing
-    today = plan_as_is(comparison.case, existing)
-    as_is = _account(comparison, today, None, today, uses, pick, on)
-    options = {}
-    for entry in comparison.entries:
-        if not entry.is_computed and entry is not existing:
-            continue
-        plan = plan_for(comparison.case, entry, existing)
-        options[entry.refrigerant.designation] = _account(comparison, plan, as_is, today, uses, pick, on)
-    return Accounts(as_is, options)
-
-
-def _account(
-    comparison: Comparison,
-    plan: Plan,
-    as_is: Account | None,
-    today: Plan,
-    uses: Mapping[str, Use],
-    pick: Pick,
-    on: datetime.date | None,
-) -> Account:
-    case, use = comparison.case, uses.get(plan.refrigerant.designation, NOT_KNOWN)
-    warming = tewi(case, plan, today, use, pick, on)
+    case, existing = comparison.case, comparison.existing
+    today = plan_as_is(case, existing)
+    plans = {AS_IS: today}
+    plans |= {
+        entry.refrigerant.designation: plan_for(case, entry, existing)
+        for entry in comparison.entries
+        if entry.is_computed or entry is existing
+    }
+    use = {name: uses.get(plan.refrigerant.designation, NOT_KNOWN) for name, plan in plans.items()}
+    warming = {name: tewi(case, plan, today, use[name], pick, on) for name, plan in plans.items()}
     if case.money is None:
-        return Account(plan, warming, None, None, None, None)
-    once, year = first_cost(case, plan, pick), yearly_cost(case, plan, use, pick)
-    today_year, today_warming = (year, warming) if as_is is None else (as_is.yearly_cost or year, as_is.tewi)
-    saving = yearly_saving(year, today_year)
-    return Account(plan, warming, once, year, saving, appraise(case, once, saving, warming, today_warming, pick))
+        found = {name: Account(plan, warming[name], None, None, None, None) for name, plan in plans.items()}
+    else:
+        yearly = counted_alike({name: yearly_cost(case, plan, use[name], pick) for name, plan in plans.items()})
+        found = {}
+        for name, plan in plans.items():
+            costs = first_cost(case, plan, pick), yearly[name], yearly_saving(yearly[name], yearly[AS_IS])
+            appraisal = appraise(case, plan, costs, warming[name], warming[AS_IS], pick)
+            found[name] = Account(plan, warming[name], *costs, appraisal)
+    return Accounts(found.pop(AS_IS), found)

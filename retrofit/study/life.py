@@ -22,6 +22,7 @@ from retrofit.study.draws import (
     year_by_map,
     year_rows,
 )
+from retrofit.study.money import Appraisal
 from retrofit.study.plan import Use
 from retrofit.study.result import Comparison, Entry, FloatArray, Installed
 from retrofit.study.spread import Spread, base_only, single
@@ -46,9 +47,10 @@ MOST_DRAWS = 20_000  # at once, for the memory that they take
 MOST_SWINGS = 10
 QUANTILES = (0.1, 0.5, 0.9)
 ROUNDING = 1e-9
+OUTCOMES = ("carries", "pays_back")  # 1 where it does, 0 where not: a share and no quantiles
 NO_YEAR = "the case has no [year]"
 MODEL = ("capacity", "cop")
-SWUNG = ("capacity_ratio", "cop_ratio", "energy_J", "energy_saving_J", "yearly_saving", "tewi_kg", "avoided_t")
+SWUNG = ("capacity_ratio", "cop_ratio", "energy_J", "energy_saving_J", "yearly_saving", "npv", "tewi_kg", "avoided_t")
 
 
 @dataclass(frozen=True)
@@ -89,7 +91,8 @@ class Certainty:
         quantiles: By quantity, see `QUANTITIES`.
         carries: Share of the draws in which it carries the cooling needed.
         uses_less, cheaper, cleaner: Share of the draws in which a year takes less electricity, the remaining life
-            costs less, and it warms less than with the plant as it is; None where that is not known.
+            costs less, discounted, and it warms less than with the plant as it is; None where that is not known.
+        pays_back: Share of the draws in which the simple payback lies within the remaining life.
         solved: Share of the draws that have a solution; the others are in none of these numbers.
         swings: By quantity, the inputs that move it most, the strongest first.
     """
@@ -99,6 +102,7 @@ class Certainty:
     uses_less: float | None
     cheaper: float | None
     cleaner: float | None
+    pays_back: float | None
     solved: float
     swings: Mapping[str, tuple[Swing, ...]]
 
@@ -227,7 +231,8 @@ def _plant(today: Today, entry: Entry) -> YearPlant:
 def _year(case: Case, way: _Way, asked: YearConditions) -> YearRun | str:
     """Return a year, or why there is none."""
     if way.seasonal_cop is not None:
-        return year_by_maker(case, asked, way.seasonal_cop)
+        option = case.options.by_refrigerant[way.entry.refrigerant.designation] if case.options else None
+        return replace(year_by_maker(case, asked, way.seasonal_cop), peak_W=option.peak_power_W if option else None)
     if way.plant is None:
         return way.reason
     try:
@@ -300,7 +305,7 @@ def _use(today: Today, way: _Way, years: YearByMap, error: ModelError, base: Yea
     """Return the electricity of a year and its peak for every row."""
     if way.plant is None:
         load_J = years.cells.hours @ years.load_W * HOUR_S
-        return Use(load_J / base.seasonal_cop, None)
+        return Use(load_J / base.seasonal_cop, base.peak_W)
     assert today.plant is not None
     ready = replace(way.plant, plant=today.plant)
     found: YearRows = year_rows(ready, way.plant, years, error, base.energy_J)
@@ -327,23 +332,31 @@ def _results(
         energy, as_is = np.asarray(uses[name].electricity_J), np.asarray(uses[today].electricity_J)
         found |= {"energy_J": energy, "energy_saving_J": as_is - energy, "energy_ratio": energy / as_is}
     found |= {"tewi_kg": account.tewi.total_kg, "direct_kg": account.tewi.direct_kg}
-    if account.first_cost and account.yearly_cost and account.saving and account.appraisal:
-        extra = account.appraisal.extra_cost
-        found |= {
-            "first_cost": account.first_cost.total,
-            "yearly_cost": account.yearly_cost.total,
-            "yearly_saving": account.saving.total,
-            "payback_years": account.appraisal.payback_years,
-            "npv": account.appraisal.npv,
-            "cost_per_t": account.appraisal.cost_per_t,
-            "life_saving": None if extra is None else -extra[..., -1],
-        }
     appraisal = account.appraisal
     if appraisal is not None:
-        found["avoided_t"] = appraisal.avoided_t
+        found |= _money(account, appraisal)
     elif account.tewi.total_kg is not None and money.as_is.tewi.total_kg is not None:
         found["avoided_t"] = (money.as_is.tewi.total_kg - account.tewi.total_kg) / 1000.0
     return {key: np.asarray(value, dtype=float) for key, value in found.items() if value is not None}
+
+
+def _money(account: Account, appraisal: Appraisal) -> dict[str, FloatArray | None]:
+    """Return the money of an option; of a lower bound and of an incomplete comparison nothing."""
+    assert account.first_cost is not None
+    assert account.yearly_cost is not None
+    assert account.saving is not None
+    back, life = appraisal.payback_years, appraisal.life_years
+    return {
+        "first_cost": account.first_cost.total,
+        "yearly_cost": account.yearly_cost.total,
+        "yearly_saving": account.saving.total,
+        "life_cost": appraisal.life_cost.total,
+        "payback_years": back,
+        "pays_back": None if back is None or life is None else np.asarray(back <= life, dtype=float),
+        "npv": appraisal.npv,
+        "cost_per_t": appraisal.cost_per_t,
+        "avoided_t": appraisal.avoided_t,
+    }
 
 
 def _certainty(rows: Sample, results: Mapping[str, FloatArray]) -> Certainty:
@@ -355,14 +368,20 @@ def _certainty(rows: Sample, results: Mapping[str, FloatArray]) -> Certainty:
         values = full[key][rows.drawn][solved] if key in full else np.array([])
         return float(np.mean(values > level)) if values.size else None
 
-    quantiles = {key: found for key, values in full.items() for found in _quantiles(values[rows.drawn][solved])}
+    quantiles = {
+        key: found
+        for key, values in full.items()
+        if key not in OUTCOMES
+        for found in _quantiles(values[rows.drawn][solved])
+    }
     swings = {key: _swings(rows, full[key]) for key in SWUNG if key in full}
     return Certainty(
         quantiles=quantiles,
         carries=share("carries", 0.5),
         uses_less=share("energy_saving_J"),
-        cheaper=share("life_saving"),
+        cheaper=share("npv"),
         cleaner=share("avoided_t"),
+        pays_back=share("pays_back", 0.5),
         solved=float(np.mean(solved)),
         swings=swings,
     )

@@ -1,22 +1,26 @@
-"""What a year costs with each option, and whether what is paid once comes back.
+"""What a year and the remaining life cost with each option, and whether what is paid once comes back.
 
 Numbers are arrays over draws or single numbers, in the currency of the case. Prices stay as they are over the
-remaining life: nobody's forecast of a tariff is put in.
+remaining life: nobody's forecast of a tariff is put in. An item that is known for one of two options alone is left out
+of what is compared between them, and then nothing is said of whether one saves money.
 """
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from collections.abc import Mapping
+from dataclasses import dataclass, replace
+from enum import StrEnum
 
 import numpy as np
 from numpy.typing import ArrayLike
 
 from retrofit.case import Case
 from retrofit.study.emissions import Tewi, leaked_kg_per_year
-from retrofit.study.first_cost import FirstCost, levy_per_kg, price_of
+from retrofit.study.first_cost import PLANT, FirstCost, charge_keys, levy_per_kg, price_of
 from retrofit.study.law_words import reason_text
 from retrofit.study.plan import Plan, Use
-from retrofit.study.spread import FloatArray, Pick, Spread, at, low_base_high, single
+from retrofit.study.spread import FloatArray, Pick, Spread, low_base_high, single
+from retrofit.study.sums import ComparisonState, Missing, Sum, sum_of
 
 J_PER_KWH, W_PER_KW, KG_PER_T, MONTHS = 3.6e6, 1e3, 1e3, 12.0
 PARTS = {
@@ -28,25 +32,46 @@ PARTS = {
     "service": "other service",
 }
 FORMULAS = {
-    "payback": "simple payback = first cost / yearly saving against the plant as it is",
-    "net present value": "NPV = -first cost + sum of yearly saving / (1 + rate)^t, at the end of each year; "
-    "of a last part of a year that part, at the end of the life",
-    "cost per tonne": "(first cost - yearly saving x remaining life) / CO2e avoided, not discounted",
+    "payback": "simple payback = first cost / annual saving against the plant as it is; not discounted, residual value "
+    "not counted",
+    "net present value": "NPV = -first cost + sum of annual saving / (1 + rate)^t + residual value / (1 + rate)^life, "
+    "at the end of each year; of a last part of a year that part, at the end of the life; above 0 it saves money",
+    "life cost": "first cost + sum of annual cost / (1 + rate)^t - residual value / (1 + rate)^life",
+    "residual value": "of a new plant that outlasts the remaining life: its price x (1 - remaining life / its life), "
+    "by straight line, or as the case gives it",
+    "cost per tonne": "-NPV / CO2e avoided over the remaining life; below 0 it saves money too",
 }
 
 
 @dataclass(frozen=True)
 class YearlyCost:
-    """What a year costs: each part by its code in PARTS, None if not known, and what is missing by that code."""
+    """What a year costs.
 
-    parts: dict[str, FloatArray | None]
-    missing: dict[str, str]
+    Attributes:
+        parts: Each part by its code in PARTS, None if not known.
+        missing: What is missing for a part that is not known, by its code.
+        needed: Codes of the parts that count: energy, and whatever is known of any option. A part that is known of none
+            is missing for all alike.
+    """
+
+    parts: Mapping[str, FloatArray | None]
+    missing: Mapping[str, Missing]
+    needed: frozenset[str] = frozenset(PARTS)
+
+    @property
+    def sum(self) -> Sum:
+        """Return the sum of the parts, a lower bound where one that counts is missing, none without the energy.
+
+        [currency/year]
+        """
+        codes = self.missing.keys() & self.needed
+        missing = tuple(self.missing[code] for code in PARTS if code in codes)
+        return Sum(None, missing) if self.parts["energy"] is None else sum_of(self.parts, missing)
 
     @property
     def total(self) -> FloatArray | None:
-        """Sum of the parts that are known; None if none is. [currency/year]"""
-        known = [part for part in self.parts.values() if part is not None]
-        return np.asarray(sum(known)) if known else None
+        """Return the sum of the parts if all that count are known. [currency/year]"""
+        return self.sum.total
 
 
 def yearly_cost(case: Case, plan: Plan, use: Use, pick: Pick = low_base_high) -> YearlyCost:
@@ -64,139 +89,267 @@ def yearly_cost(case: Case, plan: Plan, use: Use, pick: Pick = low_base_high) ->
         raise ValueError("the case has no table [money]; give one")
     name = plan.refrigerant.designation
     leak_kg = leaked_kg_per_year(plan, pick)
-    leak_missing = plan.charge_missing or plan.leak.missing
-    checks, checks_missing = _leak_checks(plan)
-    found: dict[str, tuple[FloatArray | None, str]] = {
-        "energy": _times(_price("tariff", money.tariff, pick), use.electricity_J, J_PER_KWH, "electricity of a year"),
-        "demand": _times(_price("demand_charge", money.demand_charge, pick), use.peak_W, W_PER_KW, "peak of a year"),
-        "top_up": _times((price_of(case, plan, pick), f"{name} in `refrigerant_price`"), leak_kg, 1.0, leak_missing),
-        "leak_checks": _times(_price("leak_check", money.leak_check, pick), checks, 1.0, checks_missing),
-        "levy": _times((levy_per_kg(case, plan, pick), f"`levy`, or GWP of {name}"), leak_kg, 1.0, leak_missing),
+    checks, no_checks = _leak_checks(plan)
+    prices = {
+        "energy": _price("tariff", money.tariff, pick),
+        "demand": _price("demand_charge", money.demand_charge, pick),
+        "top_up": price_of(case, plan, pick),
+        "leak_checks": _price("leak_check", money.leak_check, pick),
+        "levy": levy_per_kg(case, plan, pick),
         "service": _price("yearly_service", money.yearly_service, pick),
     }
-    parts = {code: amount for code, (amount, _) in found.items()}
-    return YearlyCost(parts, {code: why for code, (amount, why) in found.items() if amount is None})
+    amounts: dict[str, tuple[ArrayLike | None, Missing]] = {
+        "energy": (
+            _per(use.electricity_J, J_PER_KWH),
+            Missing("energy", () if case.year else ("year",), "electricity of a year is not computed"),
+        ),
+        "demand": (_per(use.peak_W, W_PER_KW), _no_peak(plan)),
+        "top_up": (leak_kg, _no_leak("top_up", case, plan)),
+        "leak_checks": (checks, no_checks),
+        "levy": (leak_kg, _no_leak("levy", case, plan)),
+        "service": (1.0, Missing("service")),
+    }
+    no_price = {
+        "energy": Missing("energy", ("money.tariff",)),
+        "demand": Missing("demand", ("money.demand_charge",)),
+        "top_up": Missing("top_up", (f"money.refrigerant_price.{name}",)),
+        "leak_checks": Missing("leak_checks", ("money.leak_check",)),
+        "levy": Missing("levy", ("money.levy",)) if money.levy is None else Missing("levy", (), f"GWP of {name}"),
+        "service": Missing("service", ("money.yearly_service",)),
+    }
+    parts: dict[str, FloatArray | None] = {}
+    missing: dict[str, Missing] = {}
+    for code, price in prices.items():
+        amount, no_amount = amounts[code]
+        if price is not None and not np.any(price):
+            parts[code] = np.asarray(price, dtype=float)  # of a price of nothing the amount does not matter
+        elif price is None or amount is None:
+            parts[code], missing[code] = None, no_price[code] if price is None else no_amount
+        else:
+            parts[code] = np.asarray(price * np.asarray(amount, dtype=float))
+    return YearlyCost(parts, missing)
 
 
-def _price(name: str, given: Spread | tuple[float, float, float] | None, pick: Pick) -> tuple[FloatArray | None, str]:
-    return (None if given is None else pick(f"money.{name}", Spread(*given))), f"`{name}` in [money]"
+def _price(name: str, given: Spread | tuple[float, float, float] | None, pick: Pick) -> FloatArray | None:
+    return None if given is None else pick(f"money.{name}", Spread(*given))
 
 
-def _times(
-    price: tuple[FloatArray | None, str], amount: ArrayLike | None, unit: float, amount_missing: str
-) -> tuple[FloatArray | None, str]:
-    """Return price times amount, or what is missing for it."""
-    known, price_missing = price
-    if known is None or amount is None:
-        return None, price_missing if known is None else amount_missing
-    return np.asarray(known * np.asarray(amount, dtype=float) / unit), ""
+def _per(amount: ArrayLike | None, unit: float) -> FloatArray | None:
+    return None if amount is None else np.asarray(amount, dtype=float) / unit
 
 
-def _leak_checks(plan: Plan) -> tuple[float | None, str]:
+def _no_peak(plan: Plan) -> Missing:
+    """Return what is missing for the demand charge; a maker's seasonal COP gives no peak."""
+    is_by_maker = plan.family == "replace" and plan.option is not None and plan.option.seasonal_cop is not None
+    keys = (f"options.{plan.refrigerant.designation}.peak_power",) if is_by_maker else ()
+    return Missing("demand", keys, "peak power of the year is not computed")
+
+
+def _no_leak(code: str, case: Case, plan: Plan) -> Missing:
+    """Return what is missing for the refrigerant lost in a year."""
+    own = f"options.{plan.refrigerant.designation}"
+    if plan.charge_kg is None:
+        return Missing(code, charge_keys(case, plan))
+    return Missing(code, ("emissions.leak_rate", f"{own}.leak_rate"), plan.leak.missing)
+
+
+def _leak_checks(plan: Plan) -> tuple[float | None, Missing]:
     """Return how many leak checks the tables of law ask for in a year, as far as they can be told."""
     if plan.law is None:
-        return None, "`jurisdiction` in [law], or a table for it"
+        return None, Missing("leak_checks", ("law.jurisdiction",))
     if plan.law.leak_check_months:
-        return MONTHS / plan.law.leak_check_months, ""
+        return MONTHS / plan.law.leak_check_months, Missing("leak_checks")
     reasons = "; ".join(map(reason_text, plan.law.leak_check_open))
-    return (None, f"time between leak checks: {reasons}") if reasons else (0.0, "")
+    return (None if reasons else 0.0), Missing("leak_checks", (), f"time between leak checks: {reasons}")
+
+
+def counted_alike(costs: Mapping[str, YearlyCost]) -> dict[str, YearlyCost]:
+    """Return yearly costs that know of each other: a part that is known of any option counts for all.
+
+    Args:
+        costs: The yearly cost of every option, the plant as it is among them.
+    """
+    known = {code for cost in costs.values() for code, part in cost.parts.items() if part is not None}
+    return {name: replace(cost, needed=frozenset(known | {"energy"})) for name, cost in costs.items()}
 
 
 @dataclass(frozen=True)
 class Saving:
-    """Yearly cost of the plant as it is less that of an option; None where energy is not known on both sides.
+    """Annual cost of the plant as it is less that of an option.
 
     Attributes:
-        by_part: The saving by its code in PARTS; only parts that are known on both sides.
-        total: Their sum.
-        not_counted: Parts left out, in words.
+        by_part: The saving by its code in PARTS; only parts that are known for both.
+        state: Whether it counts every part, only those known for both, or is not known because the energy is not.
+        of_known: The sum of `by_part`; None where the state is unknown. [currency/year]
+        excluded: Parts that are known for one of the two alone.
+        not_counted: Parts that are known for neither.
     """
 
-    by_part: dict[str, FloatArray]
-    total: FloatArray | None
-    not_counted: tuple[str, ...]
+    by_part: Mapping[str, FloatArray]
+    state: ComparisonState
+    of_known: FloatArray | None
+    excluded: tuple[Missing, ...]
+    not_counted: tuple[Missing, ...]
+
+    @property
+    def total(self) -> FloatArray | None:
+        """Return the saving if every part of it is known for both. [currency/year]"""
+        return self.of_known if self.state is ComparisonState.COMPLETE else None
 
 
 def yearly_saving(option: YearlyCost, as_is: YearlyCost) -> Saving:
-    """Return what an option saves in a year; a part known on one side only would tilt the comparison and is left out.
+    """Return what an option saves in a year; a part known for one of the two alone would tilt it and is left out.
 
     Args:
         option: What a year costs with the option.
         as_is: What a year costs with the plant as it is.
     """
-    by_part = {}
+    by_part: dict[str, FloatArray] = {}
+    excluded, not_counted = [], []
     for code in PARTS:
         here, there = option.parts[code], as_is.parts[code]
         if here is not None and there is not None:
             by_part[code] = np.asarray(there - here)
-    left_out = tuple(
-        f"{PARTS[code]} ({option.missing.get(code) or as_is.missing.get(code)})"
-        for code in PARTS
-        if code not in by_part
-    )
-    total = np.asarray(sum(by_part.values())) if "energy" in by_part else None
-    return Saving(by_part, total, left_out)
+        elif here is None and there is None:
+            not_counted.append(option.missing[code])
+        else:
+            excluded.append(option.missing[code] if here is None else as_is.missing[code])
+    if "energy" not in by_part:
+        return Saving(by_part, ComparisonState.UNKNOWN, None, tuple(excluded), tuple(not_counted))
+    state = ComparisonState.INCOMPLETE if excluded else ComparisonState.COMPLETE
+    return Saving(by_part, state, np.asarray(sum(by_part.values())), tuple(excluded), tuple(not_counted))
 
 
 @dataclass(frozen=True)
 class Appraisal:
-    """Whether an option pays; None where it cannot be told.
+    """Whether an option pays against the plant as it is; what rests on an incomplete comparison is None.
 
     Attributes:
+        state: Whether the comparison counts every item, only those known for both, or cannot be made.
+        excluded: Items left out because they are known for one of the two alone.
         payback_years: Simple payback; 0 without a first cost, infinite without a saving.
-        npv: Net present value over the remaining life; None without a discount rate too.
+        npv: Net present value over the remaining life, above 0 where the option saves money.
+        npv_of_known: The same of the items known for both, which does not show whether the option saves money.
+        life_cost: First cost and discounted annual cost less residual value; a lower bound where items are missing.
+        residual: Residual value at the end of the remaining life; None without a new plant or a remaining life.
         cost_per_t: Cost of each tonne of CO2e avoided, below 0 where it saves money too; NaN where none is avoided.
-        avoided_t: CO2e avoided over the remaining life against the plant as it is, below 0 if more is emitted.
-        years, extra_cost: Ends of the years from 0 to the remaining life, and what the option has cost by then more
-            than the plant as it is (it crosses 0 at the payback); shape (..., m).
+        avoided_t: CO2e avoided over the remaining life, below 0 if more is emitted.
+        years, saved: Ends of the years from 0 to the remaining life, and what the option has saved by then, first cost
+            paid, not discounted and without residual value (it crosses 0 at the payback); shape (..., m).
         life_years: Remaining life.
+        annuity_years: Present value of one unit of money in each year of the remaining life.
     """
 
+    state: ComparisonState
+    excluded: tuple[Missing, ...]
     payback_years: FloatArray | None
     npv: FloatArray | None
+    npv_of_known: FloatArray | None
+    life_cost: Sum
+    residual: FloatArray | None
     cost_per_t: FloatArray | None
     avoided_t: FloatArray | None
     years: FloatArray | None
-    extra_cost: FloatArray | None
+    saved: FloatArray | None
     life_years: FloatArray | None
-
-    @property
-    def share_paid_back(self) -> float | None:
-        """Share of the draws that pay back within the remaining life. [-]"""
-        if self.payback_years is None or self.life_years is None:
-            return None
-        return float(np.mean(self.payback_years <= self.life_years))
+    annuity_years: FloatArray | None
 
 
 def appraise(
-    case: Case, first: FirstCost, saving: Saving, option: Tewi, as_is: Tewi, pick: Pick = low_base_high
+    case: Case,
+    plan: Plan,
+    costs: tuple[FirstCost, YearlyCost, Saving],
+    option: Tewi,
+    as_is: Tewi,
+    pick: Pick = low_base_high,
 ) -> Appraisal:
     """Return whether an option pays.
 
     Args:
         case: The case.
-        first: What the option costs once.
-        saving: What it saves in a year.
+        plan: The option.
+        costs: What it costs once and in a year, and what it saves in a year.
         option: Its warming, with the remaining life.
         as_is: Warming of the plant as it is.
-        pick: What to take of the discount rate's spread.
+        pick: What to take of the spread of discount rate and residual value.
     Source: FORMULAS.
     """
-    cost, gain, years = first.total, saving.total, option.years
+    first, yearly, saving = costs
     avoided = None
     if option.total_kg is not None and as_is.total_kg is not None:
         avoided = np.asarray((as_is.total_kg - option.total_kg) / KG_PER_T)
+    excluded = (*first.missing, *saving.excluded)
+    state = ComparisonState.INCOMPLETE if excluded else ComparisonState.COMPLETE
+    cost, gain, years, life = first.at_least, saving.of_known, option.years, option.life_years
     if cost is None or gain is None:
-        return Appraisal(None, None, None, avoided, years, None, option.life_years)
-    payback = payback_years(cost, gain)
-    if years is None or option.life_years is None:
-        return Appraisal(payback, None, None, avoided, None, None, None)
-    rate = case.money.discount_rate if case.money else None
-    npv = None if rate is None else net_present_value(cost, gain, years, pick("money.discount_rate", single(rate)))
-    net = cost - gain * option.life_years
-    per_t = None if avoided is None else np.where(avoided > 0.0, net / np.where(avoided > 0.0, avoided, 1.0), np.nan)
-    extra = np.asarray(cost)[..., None] - np.asarray(gain)[..., None] * years
-    return Appraisal(payback, npv, per_t, avoided, years, extra, option.life_years)
+        state = ComparisonState.UNKNOWN
+    is_complete = state is ComparisonState.COMPLETE
+    payback = payback_years(cost, gain) if is_complete and cost is not None and gain is not None else None
+    if years is None or life is None:
+        unknown = Sum(None, (*first.missing, *yearly.sum.missing))
+        return Appraisal(
+            state, excluded, payback, None, None, unknown, None, None, avoided, None, None, None, None
+        )  # fmt: skip
+    rate = pick("money.discount_rate", single(case.money.discount_rate if case.money else 0.0))
+    annuity = annuity_years(years, rate)
+    residual = _residual(case, plan, first, life, pick)
+    comes_back = 0.0 if residual is None else residual * (1.0 + rate) ** -life
+    life_cost = _life_cost(first, yearly, annuity, comes_back)
+    if cost is None or gain is None:
+        return Appraisal(
+            state, excluded, None, None, None, life_cost, residual, None, avoided, years, None, life, annuity
+        )  # fmt: skip
+    npv = np.asarray(gain * annuity - cost + comes_back)
+    saved = np.asarray(np.asarray(gain)[..., None] * years - np.asarray(cost)[..., None])
+    per_t = None if avoided is None else np.where(avoided > 0.0, -npv / np.where(avoided > 0.0, avoided, 1.0), np.nan)
+    return Appraisal(
+        state=state,
+        excluded=excluded,
+        payback_years=payback,
+        npv=npv if is_complete else None,
+        npv_of_known=npv,
+        life_cost=life_cost,
+        residual=residual,
+        cost_per_t=per_t if is_complete else None,
+        avoided_t=avoided,
+        years=years,
+        saved=saved if is_complete else None,
+        life_years=life,
+        annuity_years=annuity,
+    )
+
+
+def _life_cost(first: FirstCost, yearly: YearlyCost, annuity: FloatArray, comes_back: ArrayLike) -> Sum:
+    """Return the present value of everything that an option costs."""
+    a_year = yearly.sum
+    missing = (*first.missing, *a_year.missing)
+    if first.at_least is None or a_year.known is None:
+        return Sum(None, missing)
+    return Sum(np.asarray(first.at_least + a_year.known * annuity - np.asarray(comes_back)), missing)
+
+
+def _residual(case: Case, plan: Plan, first: FirstCost, life: FloatArray, pick: Pick) -> FloatArray | None:
+    """Return what a new plant is worth at the end of the remaining life; None without one. [currency]"""
+    price, lasts = first.amount_of(PLANT), first.plant_life_years
+    if price is None or lasts is None:
+        return None
+    given = plan.option.residual_value if plan.option else None
+    if given is not None:
+        return pick(f"options.{plan.refrigerant.designation}.residual_value", Spread(*given))
+    return straight_line_residual(price, life, lasts)
+
+
+def straight_line_residual(price: ArrayLike, age_years: ArrayLike, life_years: ArrayLike) -> FloatArray:
+    """Return what is left of a price after some years, falling evenly to nothing over a life. [currency]
+
+    Args:
+        price: What was paid. [currency]
+        age_years: Years since then. [years]
+        life_years: Years over which the value falls to nothing. [years]
+    Source: straight-line depreciation, definition.
+    """
+    left = np.maximum(1.0 - np.asarray(age_years, dtype=float) / np.asarray(life_years, dtype=float), 0.0)
+    return np.asarray(np.asarray(price, dtype=float) * left)
 
 
 def payback_years(first_cost: ArrayLike, yearly_saving: ArrayLike) -> FloatArray:
@@ -215,10 +368,22 @@ def payback_years(first_cost: ArrayLike, yearly_saving: ArrayLike) -> FloatArray
     return np.where(saves, paid_back, np.where((cost <= 0.0) & (gain == 0.0), 0.0, np.inf))
 
 
+def annuity_years(year_ends: ArrayLike, discount_rate: ArrayLike) -> FloatArray:
+    """Return the present value of one unit of money paid at the end of each year. [years]
+
+    Args:
+        year_ends: Ends of the years, 0 first, the last one the life, shape (..., m). [years]
+        discount_rate: Rate of a year. [-]
+    Source: FORMULAS["net present value"]; of a last part of a year that part counts.
+    """
+    ends, rate = np.asarray(year_ends, dtype=float), np.asarray(discount_rate, dtype=float)[..., None]
+    return np.asarray(np.sum(np.diff(ends, axis=-1) * (1.0 + rate) ** -ends[..., 1:], axis=-1))
+
+
 def net_present_value(
     first_cost: ArrayLike, yearly_saving: ArrayLike, year_ends: ArrayLike, discount_rate: ArrayLike
 ) -> FloatArray:
-    """Return the net present value of what is paid once and saved each year. [currency]
+    """Return the net present value of what is paid once and saved each year, without residual value. [currency]
 
     Args:
         first_cost: What is paid at the start. [currency]
@@ -227,94 +392,70 @@ def net_present_value(
         discount_rate: Rate of a year. [-]
     Source: FORMULAS["net present value"]; textbook definition with flows at the ends of years.
     """
-    ends, rate = np.asarray(year_ends, dtype=float), np.asarray(discount_rate, dtype=float)[..., None]
-    factors = np.sum(np.diff(ends, axis=-1) * (1.0 + rate) ** -ends[..., 1:], axis=-1)
-    found: FloatArray = np.asarray(yearly_saving, dtype=float) * factors - np.asarray(first_cost, dtype=float)
-    return found
+    factor = annuity_years(year_ends, discount_rate)
+    return np.asarray(np.asarray(yearly_saving, dtype=float) * factor - np.asarray(first_cost, dtype=float))
 
 
-# In words
+# States
 
 
-def payback_words(found: Appraisal, index: int = 0) -> str:
-    """Return the simple payback in words; what does not come back is said so.
+class PaybackState(StrEnum):
+    """Whether what is paid once comes back."""
+
+    NEVER = "never"
+    NONE_NEEDED = "none needed"
+    WITHIN = "within"
+    BEYOND = "beyond"
+    UNKNOWN = "unknown"
+
+
+@dataclass(frozen=True)
+class Payback:
+    """A simple payback: its state, its years where there are any, and the remaining life if it is given. [years]"""
+
+    state: PaybackState
+    years: float | None = None
+    life_years: float | None = None
+
+
+def payback_of(years: float | None, life_years: float | None) -> Payback:
+    """Return what a simple payback is beside the remaining life: the one place that says so.
 
     Args:
-        found: Whether the option pays.
-        index: Which of its numbers: 1 is the base of low, base and high. [-]
+        years: Years as `payback_years` gives them; None if not known. [years]
+        life_years: Remaining life; None if not given. [years]
+    Returns: The state; unknown also where the years are known and the remaining life is not.
     """
-    if found.payback_years is None:
-        return "payback unknown: first cost or yearly saving is not known"
-    years = at(found.payback_years, index)
+    if years is None:
+        return Payback(PaybackState.UNKNOWN, None, life_years)
     if np.isinf(years):
-        return "no payback: a year costs more than, or as much as, with the plant as it is"
+        return Payback(PaybackState.NEVER, None, life_years)
     if years == 0.0:
-        return "nothing to pay back: no extra first cost"
-    if found.life_years is None:
-        return f"{years:.1f} years; the remaining life is not given"
-    life = at(found.life_years, index)
-    if years > life:
-        return f"{years:.1f} years, beyond the remaining life of {life:g} years: it does not pay back"
-    return f"{years:.1f} of the {life:g} years left"
+        return Payback(PaybackState.NONE_NEEDED, None, life_years)
+    if life_years is None:
+        return Payback(PaybackState.UNKNOWN, years, None)
+    return Payback(PaybackState.WITHIN if years <= life_years else PaybackState.BEYOND, years, life_years)
 
 
-def cost_per_tonne_words(found: Appraisal, currency: str, index: int = 0) -> str:
-    """Return the cost of each tonne of CO2e avoided in words.
+class AbatementState(StrEnum):
+    """What it costs to avoid CO2e: money, less than nothing, or nothing is avoided."""
+
+    COSTS = "costs"
+    SAVES = "saves"
+    NONE_AVOIDED = "none avoided"
+    UNKNOWN = "unknown"
+
+
+def abatement_of(found: Appraisal) -> AbatementState:
+    """Return what it costs to avoid CO2e with an option, by base values.
 
     Args:
-        found: Whether the option pays.
-        currency: Currency of the case. [-]
-        index: Which of its numbers: 1 is the base of low, base and high. [-]
+        found: Whether the option pays, in base values.
     """
     if found.avoided_t is None:
-        return "unknown: emissions are not known on both sides"
-    if at(found.avoided_t, index) < 0.0:
-        return "none avoided: it emits more than the plant as it is"
-    if at(found.avoided_t, index) == 0.0:
-        return "none avoided: it emits as much as the plant as it is"
+        return AbatementState.UNKNOWN
+    if float(found.avoided_t) <= 0.0:
+        return AbatementState.NONE_AVOIDED
     if found.cost_per_t is None:
-        return "unknown: first cost, yearly saving or remaining life is not known"
-    cost = at(found.cost_per_t, index)
-    if cost < 0.0:
-        return f"saves money too: {-cost:,.0f} {currency} for each tonne of CO2e avoided"
-    return f"{cost:,.0f} {currency} for each tonne of CO2e avoided"
-
-
-def energy_words(option: Use, as_is: Use, band: float, index: int = 0) -> str:
-    """Return a word of doubt where a saving of energy is smaller than the model can tell; else nothing.
-
-    Args:
-        option: Electricity of a year with the option.
-        as_is: The same of the plant as it is.
-        band: How far the model may be off, as a share. [-]
-        index: Which of the numbers: 1 is the base of low, base and high. [-]
-    """
-    if option.electricity_J is None or as_is.electricity_J is None:
-        return ""
-    here, there = at(np.asarray(option.electricity_J), index), at(np.asarray(as_is.electricity_J), index)
-    return _band_words("electricity", here - there, max(here, there), band)
-
-
-def climate_words(option: Tewi, as_is: Tewi, band: float, index: int = 0) -> str:
-    """Return a word of doubt where CO2e avoided is smaller than the model of the electricity can tell; else nothing.
-
-    Args:
-        option: Warming of the option.
-        as_is: Warming of the plant as it is.
-        band: How far the model of the electricity may be off, as a share. [-]
-        index: Which of the numbers: 1 is the base of low, base and high. [-]
-    """
-    totals, indirect = (option.total_kg, as_is.total_kg), (option.indirect_kg, as_is.indirect_kg)
-    if any(found is None for found in (*totals, *indirect)):
-        return ""
-    here, there = (at(found, index) for found in totals if found is not None)
-    return _band_words("CO2e", here - there, max(at(found, index) for found in indirect if found is not None), band)
-
-
-def _band_words(what: str, difference: float, modelled: float, band: float) -> str:
-    if difference == 0.0 or abs(difference) > band * modelled:
-        return ""
-    return (
-        f"the difference in {what}, {abs(difference) / modelled:.1%} of what is modelled, lies within the ±{band:.0%} "
-        "of the model: no meaningful difference"
-    )
+        return AbatementState.UNKNOWN
+    return AbatementState.SAVES if float(found.cost_per_t) < 0.0 else AbatementState.COSTS

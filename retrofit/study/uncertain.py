@@ -66,12 +66,13 @@ NAMES = {
     "money.tariff": "Price of electricity",
     "money.demand_charge": "Demand charge",
     "money.discount_rate": "Discount rate",
+    "money.new_plant_life": "Life of a new plant",
     "money.leak_check": "Cost of a leak check",
     "money.levy": "Levy on refrigerant",
     "money.yearly_service": "Yearly service",
 }
 LEAK_RATES = ("emissions.leak_rate", "emissions.leak_rate_after", "law.annual_leak_rate", "law.equipment")
-OPTION_KINDS = {"charge": "mass", "leak_rate": "fraction", "contingency": "fraction"}
+OPTION_KINDS = {"charge": "mass", "leak_rate": "fraction", "contingency": "fraction", "plant_life": "years"}
 OWN_KINDS = {
     WEATHER: "temperature difference",
     "law.equipment": "fraction",

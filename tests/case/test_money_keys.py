@@ -37,12 +37,32 @@ def test_money_as_written(case):
     assert money.discount_rate == pytest.approx(0.06)
 
 
-def test_money_assumes_nothing(case):
-    """No price has a default: what is left out is not counted."""
+def test_money_assumes_no_price(case):
+    """No price has a default: what is left out is not counted. Without a rate nothing is discounted, and it says so."""
     read = case(START + EURO)
 
-    assert not [default for default in read.defaults if default.key.startswith("money.")]
+    assert [(d.key, d.shown_text) for d in read.defaults if d.key.startswith("money.")] == [
+        ("money.discount_rate", "0 %")
+    ]
     assert read.money.tariff is None
+
+
+@pytest.mark.parametrize(
+    ("money", "option", "is_assumed"),
+    [
+        ("", "new_plant = 9000", True),
+        ("", "leak_rate = '2 %'", False),
+        ("", "new_plant = 9000\nplant_life = '20 years'", False),
+        ("", "new_plant = 9000\nresidual_value = 2000", False),
+        ("new_plant_life = '20 years'\n", "new_plant = 9000", False),
+        ("[money.change]\nnew_plant = 9000\n", "leak_rate = '2 %'", True),
+    ],
+)
+def test_the_life_of_a_new_plant_is_assumed_where_a_residual_value_rests_on_it(case, money, option, is_assumed):
+    """15 years stand among the assumptions only if a new plant is priced and nothing better is given."""
+    read = case(START + EURO + money + f"[options.R448A]\n{option}\n")
+
+    assert [d.shown_text for d in read.defaults if d.key == "money.new_plant_life"] == ["15 years"] * is_assumed
 
 
 @pytest.mark.parametrize(

@@ -6,22 +6,27 @@ import math
 from collections.abc import Callable, Iterable
 from dataclasses import dataclass
 
-from retrofit.checks.outlook import KG_PER_T, currency, payback_text, per_tonne_text
+from retrofit.checks.money_words import INCOMPLETE, INCOMPLETE_WORDS, PAYBACK_WORDS, missing_items_words
+from retrofit.checks.outlook import KG_PER_T, currency, money_text
 from retrofit.checks.prospects import (
     NO_MONEY,
     Prospect,
+    compared,
     difference,
     first_cost_range,
-    life_cost,
     life_of_result,
     missing_words,
+    payback,
     probability,
     prospects,
+    sum_of_option,
 )
 from retrofit.report.emissions import check_months
 from retrofit.report.spreadsheet.table import Column
 from retrofit.study import Comparison
+from retrofit.study.money import AbatementState, PaybackState, abatement_of
 from retrofit.study.spread import FloatArray, Spread
+from retrofit.study.sums import ComparisonState
 from retrofit.units import Display, Unit, UnitSystem
 
 Read = Callable[[Prospect], float | None]
@@ -30,9 +35,9 @@ A_YEAR, REMAINING_LIFE = "a year", "remaining life"
 ITSELF = "the others count against it"
 BY_MAKER = "the maker's seasonal COP does not tell it"
 NO_DRAWS = "no draws were made"
-NO_RATE = "`discount_rate` in [money] is not given"
 NO_CHECKS = "the tables of law ask for none"
-NEVER = "no payback: a year costs more than, or as much as, with the plant as it is"
+NEVER = PAYBACK_WORDS[PaybackState.NEVER]
+NO_RESIDUAL = "no new plant"
 SIZED = "a new plant is sized to carry what is needed"
 SAME_PLANT = "it is the plant as it is, in its electricity"
 
@@ -110,7 +115,7 @@ def measures(comparison: Comparison) -> dict[str, tuple[Measure, ...]]:
     case, as_is = comparison.case, prospects(comparison)[0]
     year = (*_energy(as_is), *_year()) if life_of_result(comparison).asked else ()
     climate = _climate(as_is) if case.emissions else ()
-    yearly = _yearly() if case.money else ()
+    yearly = _yearly(comparison) if case.money else ()
     life = _money(comparison) if case.money else ()
     sure = _sure(as_is) if life_of_result(comparison).certainty else ()
     found = {A_YEAR: (*year, *yearly), REMAINING_LIFE: (*climate, *life, *sure)}
@@ -171,23 +176,50 @@ def _no_year(option: Prospect) -> str:
     return BY_MAKER if option.year else option.no_year
 
 
-def _yearly() -> tuple[Measure, ...]:
-    def cost(option: Prospect) -> float | None:
-        found = option.account.yearly_cost
-        return _number(found.total) if found else None
-
-    def saving(option: Prospect) -> float | None:
-        found = option.account.saving
-        return _number(found.total) if found else None
-
-    def no_cost(option: Prospect) -> str:
-        found = option.account.yearly_cost
-        return _for_want_of("; ".join(dict.fromkeys(found.missing.values()))) if found else NO_MONEY
-
+def _yearly(comparison: Comparison) -> tuple[Measure, ...]:
     return (
-        Measure("Yearly cost, parts known", "currency/year", cost, no_cost, "yearly_cost"),
-        Measure("Yearly saving", "currency/year", saving, _missing("saving"), "yearly_saving", True),
+        Measure("Annual cost", "currency/year", _known("yearly_cost"), _why_no_sum("yearly_cost"), "yearly_cost"),
+        Measure("Annual saving", "currency/year", *_compared(comparison, "saving"), "yearly_saving", True),
     )
+
+
+SUMS = {
+    A_YEAR: {"annual cost": "yearly_cost"},
+    REMAINING_LIFE: {"first cost": "first_cost", "life cost": "life_cost"},
+}
+"""Sums of each basis that may be lower bounds."""
+
+
+def _known(name: str) -> Read:
+    """Return what reads the known part of a sum: a lower bound where an item is missing."""
+    return lambda option: _number(found.known) if (found := sum_of_option(option, name)) else None
+
+
+def _why_no_sum(name: str) -> Why:
+    def why(option: Prospect) -> str:
+        found = sum_of_option(option, name)
+        if found is None:
+            return NO_MONEY
+        return _needs(missing_items_words(found.missing)) if found.missing else missing_words(option, "npv")
+
+    return why
+
+
+def _compared(comparison: Comparison, quantity: str) -> tuple[Read, Why]:
+    """Return what reads a saving or net present value against the plant as it is, and what says why there is none."""
+
+    def why(option: Prospect) -> str:
+        found, needs = compared(option, quantity), missing_words(option, quantity)
+        if found.state is not ComparisonState.INCOMPLETE:
+            return _needs(needs)
+        known = money_text(comparison, found.of_known, signed=True)
+        return f"{INCOMPLETE}, {INCOMPLETE_WORDS}; needs {needs}; the items known for both come to {known}"
+
+    return lambda option: compared(option, quantity).amount, why
+
+
+def _needs(missing: str) -> str:
+    return f"needs {missing}" if missing else ""
 
 
 # The remaining life
@@ -226,11 +258,11 @@ def _gwp_doubt(option: Prospect) -> str:
 
 
 def _charge_missing(option: Prospect) -> str:
-    return _for_want_of(option.account.plan.charge_missing)
+    return _lacking(option.account.plan.charge_missing)
 
 
 def _leak_missing(option: Prospect) -> str:
-    return _for_want_of(option.account.plan.leak.missing)
+    return _lacking(option.account.plan.leak.missing)
 
 
 def _of_tewi(name: str) -> Read:
@@ -248,46 +280,44 @@ def _avoided(as_is: Prospect) -> Read:
 
 
 def _money(comparison: Comparison) -> tuple[Measure, ...]:
-    appraised = (
-        ("Payback", "years", "payback_years", lambda o: _missing("cost")(o) or payback_text(o)),
-        ("Net present value", "currency", "npv", _no_npv(comparison)),
-        (
-            "Cost of a tonne avoided",
-            "currency/t CO2e",
-            "cost_per_t",
-            lambda o: per_tonne_text(comparison, o).removeprefix("unknown: "),
-        ),
-    )
+    npv, not_compared = _compared(comparison, "npv")
+
+    no_first = _why_no_sum("first_cost")
+
+    def payback_years(option: Prospect) -> float | None:
+        return payback(option).years
+
+    def no_payback(option: Prospect) -> str:
+        state = payback(option).state
+        return not_compared(option) if state is PaybackState.UNKNOWN else PAYBACK_WORDS[state]
+
+    def cost_per_t(option: Prospect) -> float | None:
+        return _number(option.account.appraisal.cost_per_t) if option.account.appraisal else None
+
+    def no_cost_per_t(option: Prospect) -> str:
+        appraisal = option.account.appraisal
+        if appraisal is not None and abatement_of(appraisal) is AbatementState.NONE_AVOIDED:
+            return "no CO2e is avoided"
+        return _missing("emissions")(option) or not_compared(option)
+
+    def residual(option: Prospect) -> float | None:
+        return _number(option.account.appraisal.residual) if option.account.appraisal else None
+
     return (
-        Measure("First cost", "currency", lambda o: _first(o, 1), _no_first, "first_cost"),
-        Measure("First cost, every item low", "currency", lambda o: _first(o, 0), _no_first),
-        Measure("First cost, every item high", "currency", lambda o: _first(o, 2), _no_first),
-        Measure("Saved, first cost paid", "currency", _saved, _missing("cost"), "life_saving", True),
-        *(Measure(text, kind, _appraised(name), why, name, True) for text, kind, name, why in appraised),
+        Measure("First cost", "currency", _known("first_cost"), no_first, "first_cost"),
+        Measure("First cost, every item low", "currency", lambda o: _first(o, 0), no_first),
+        Measure("First cost, every item high", "currency", lambda o: _first(o, 2), no_first),
+        Measure("Residual value of the new plant", "currency", residual, lambda o: "", otherwise=NO_RESIDUAL),
+        Measure("Life cost", "currency", _known("life_cost"), _why_no_sum("life_cost"), "life_cost"),
+        Measure("Payback", "years", payback_years, no_payback, "payback_years", True),
+        Measure("Net present value", "currency", npv, not_compared, "npv", True),
+        Measure("Cost of a tonne avoided", "currency/t CO2e", cost_per_t, no_cost_per_t, "cost_per_t", True),
     )  # fmt: skip
-
-
-def _saved(option: Prospect) -> float | None:
-    return _minus(life_cost(option))
 
 
 def _first(option: Prospect, place: int) -> float | None:
     found = first_cost_range(option)
     return None if found is None else found[place]
-
-
-def _no_first(option: Prospect) -> str:
-    found = option.account.first_cost
-    return _for_want_of(found.missing) if found else NO_MONEY
-
-
-def _appraised(name: str) -> Read:
-    return lambda option: _number(getattr(option.account.appraisal, name, None))
-
-
-def _no_npv(comparison: Comparison) -> Why:
-    money = comparison.case.money
-    return _missing("cost") if money and money.discount_rate is not None else lambda option: NO_RATE
 
 
 def _sure(as_is: Prospect) -> tuple[Measure, ...]:
@@ -303,7 +333,8 @@ def _sure(as_is: Prospect) -> tuple[Measure, ...]:
 
     rests_on = (
         ("uses less electricity", "uses_less", "energy"),
-        ("costs less", "cheaper", "cost"),
+        ("costs less", "cheaper", "npv"),
+        ("pays back within the remaining life", "pays_back", "npv"),
         ("warms less", "cleaner", "emissions"),
     )
     return (
@@ -340,16 +371,16 @@ def reason(measure: Measure, option: Prospect) -> str:
 def _missing(quantity: str) -> Why:
     if quantity == "energy":
         return lambda option: missing_words(option, quantity)  # a sentence by itself
-    return lambda option: _for_want_of(missing_words(option, quantity))
+    return lambda option: _lacking(missing_words(option, quantity))
 
 
-def _for_want_of(missing: str) -> str:
+def _lacking(missing: str) -> str:
     """Return what is missing as a reason; nothing if nothing is.
 
     Args:
         missing: What is missing, in words. [-]
     """
-    return f"for want of {missing}" if missing else ""
+    return f"missing: {missing}" if missing else ""
 
 
 def _number(value: FloatArray | float | None) -> float | None:

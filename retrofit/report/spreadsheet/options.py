@@ -6,12 +6,14 @@ import math
 from collections.abc import Iterator
 from dataclasses import dataclass
 
-from retrofit.checks.prospects import KEPT, Prospect, is_alike, prospects, quantile
+from retrofit.checks.money_words import AT_LEAST_WORDS, item_name, item_names, missing_items_words, payback_words
+from retrofit.checks.prospects import KEPT, Prospect, is_alike, payback, prospects, quantile, sum_of_option
 from retrofit.report.judging import spelled
 from retrofit.report.spreadsheet.measures import (
     A_YEAR,
     NEVER,
     REMAINING_LIFE,
+    SUMS,
     Measure,
     column_of,
     is_itself,
@@ -22,17 +24,18 @@ from retrofit.report.spreadsheet.measures import (
 )
 from retrofit.report.spreadsheet.table import Column, Content, in_units
 from retrofit.study import Comparison, Entry
-from retrofit.study.money import payback_words
+from retrofit.study.sums import SumState
 from retrofit.units import UnitSystem, listed
 
 BASE = "base"
 DRAWN = {0: "10 % of draws below", 1: "50 % of draws below", 2: "90 % of draws below"}
 ALIKE, NOT_COUNTED, IN_WORDS = "No meaningful difference in", "Not counted", "Payback in words"
+BOUNDS, STATE = "Lower bounds", "Comparison"
 OF_BASE = "only the base value is kept"
 # By basis: what an option may show no meaningful difference from the plant as it is in.
 COMPARED = {
-    A_YEAR: {"energy": "electricity", "saving": "yearly saving"},
-    REMAINING_LIFE: {"emissions": "warming", "cost": "cost over the remaining life"},
+    A_YEAR: {"energy": "electricity", "saving": "annual saving"},
+    REMAINING_LIFE: {"emissions": "warming", "npv": "net present value"},
 }
 # By basis of the design point: heading in the sheet, name among the results of the draws, and kind. The draws hold the
 # existing plant, or without its exchangers its compressor at today's temperatures.
@@ -72,8 +75,8 @@ def option_columns(comparison: Comparison, units: UnitSystem) -> tuple[Column, .
         for numbers in measures(comparison).values()
         for measure in numbers
     ]
-    words = (Column(IN_WORDS, width=30), Column(ALIKE, width=30), Column(NOT_COUNTED, width=60)) if found else ()
-    return (*found, *words)
+    widths = {IN_WORDS: 30, STATE: 14, BOUNDS: 60, ALIKE: 30, NOT_COUNTED: 60} if found else {}
+    return (*found, *(Column(heading, width=width) for heading, width in widths.items()))
 
 
 def option_rows(comparison: Comparison, units: UnitSystem) -> Iterator[OptionRow]:
@@ -154,19 +157,34 @@ def _told(gaps: dict[str, list[str]]) -> list[str]:
 
 def _words(basis: str, as_is: Prospect, option: Prospect) -> dict[str, Content]:
     """Return what is to be said beside the numbers: what the model cannot tell apart, and what is not counted."""
+    bounds: dict[str, Content] = {BOUNDS: spelled(_bounds(basis, option)) or None}
     if option is as_is:
-        return {}
+        return bounds
     alike = [text for quantity, text in COMPARED[basis].items() if is_alike(as_is, option, quantity)]
-    words: dict[str, Content] = {
+    words: dict[str, Content] = bounds | {
         ALIKE: listed(alike, "and") if alike else None,
         NOT_COUNTED: _not_counted(basis, option),
     }
-    appraisal = option.account.appraisal
-    return words | ({IN_WORDS: payback_words(appraisal)} if appraisal and basis != A_YEAR else {})
+    saving, appraisal = option.account.saving, option.account.appraisal
+    if saving is None or appraisal is None:
+        return words
+    if basis == A_YEAR:
+        return words | {STATE: saving.state.value}
+    return words | {STATE: appraisal.state.value, IN_WORDS: payback_words(payback(option))}
+
+
+def _bounds(basis: str, option: Prospect) -> str:
+    """Return which sums are lower bounds, and what they need to be complete."""
+    found = ((heading, sum_of_option(option, name)) for heading, name in SUMS[basis].items())
+    return "; ".join(
+        f"{heading}: {AT_LEAST_WORDS}, {missing_items_words(part.missing)}"
+        for heading, part in found
+        if part is not None and part.state is SumState.AT_LEAST
+    )
 
 
 def _not_counted(basis: str, option: Prospect) -> str:
     saving, first = option.account.saving, option.account.first_cost
     if basis == A_YEAR:
-        return spelled("; ".join(saving.not_counted)) if saving else ""
-    return "; ".join(first.not_counted) if first else ""
+        return spelled(item_names(saving.not_counted)) if saving and saving.not_counted else ""
+    return "; ".join(item_name(code) for code in first.not_counted) if first else ""
