@@ -45,6 +45,7 @@ from retrofit.checks.prospects import (
 )
 from retrofit.checks.reading_words import contradiction_words, duty_words
 from retrofit.figures.tornado import limits_text
+from retrofit.refrigerants import with_hyphens
 from retrofit.report.certainty import chance, method
 from retrofit.report.emissions import check_months
 from retrofit.report.terminal import cautions_text
@@ -453,7 +454,8 @@ def _swings(comparison: Comparison, units: UnitSystem, strong: Emphasis) -> str:
         Column("At low"), Column("At high"),
     ]  # fmt: skip
     base = result_text(comparison, units, name, swings[0].base)
-    return f"{strong(f'What moves {TOLD[name]} of {option.name} most ({base} at the base)')}\n{text_table(heads, rows)}"
+    heading = strong(f"What moves {TOLD[name]} of {with_hyphens(option.name)} most ({base} at the base)")
+    return f"{heading}\n{text_table(heads, rows)}"
 
 
 def _small_print(comparison: Comparison, options: Sequence[Prospect], columns: int, strong: Emphasis) -> str:
