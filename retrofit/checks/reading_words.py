@@ -17,11 +17,11 @@ NAMES = {
     Compared.COP: "COP on electrical power",
     Compared.CAPACITY: "cooling",
     Compared.HEAT_REJECTED: "heat rejected",
-    Compared.HEAT_BALANCE: "heat rejected, against cooling and power read",
+    Compared.HEAT_BALANCE: "heat balance, rejected against taken up",
 }
 WHY_NOT = {
-    WhyNot.NOT_READ: "not read",
-    WhyNot.KEY_MISSING: "needs",
+    WhyNot.NOT_READ: "needs",
+    WhyNot.KEY_MISSING: "also needs",
     WhyNot.IN_DOUBT: "in doubt",
     WhyNot.PART_LOAD: "read at part load: which part of the swept volume ran is not known",
     WhyNot.IN_THE_MODEL: "taken into the model, so it cannot test it",
@@ -29,6 +29,15 @@ WHY_NOT = {
     WhyNot.NOT_SOLVED: "the model has no solution at the readings",
     WhyNot.BELOW_RANGE: "less power than the model needs: a motor gives no more than it takes",
     WhyNot.ABOVE_RANGE: "more than motor and drive lose",
+}
+# Why losses are not taken where there is no ratio to take them from.
+NO_RATIO = {
+    WhyNot.NOT_READ: "no power was read, nor a current with voltage, phases and power factor",
+    WhyNot.KEY_MISSING: "the power of the current is not known",
+    WhyNot.IN_DOUBT: "the power read is in doubt",
+    WhyNot.PART_LOAD: "the power was read at part load, and which part of the swept volume ran is not known",
+    WhyNot.IN_THE_MODEL: "the volumetric efficiency of the model is already made from the power read",
+    WhyNot.NOT_SOLVED: "the model has no solution at the readings",
 }
 ABSOLUTE = (Compared.POWER, Compared.CURRENT, Compared.COP)
 RATIOS_STAND = (
@@ -134,6 +143,21 @@ def by_words(beside: Beside) -> str:
     return sign + (quantity("temperature difference", abs(seen), ".0f") if is_kelvin else f"{abs(seen):.0%}")
 
 
+def expected_words(comparison: Comparison) -> tuple[str, ...]:
+    """Return how far readings that the model expects after a change may be off, as today's are.
+
+    Args:
+        comparison: A result.
+    """
+    apart = differing(readings_held(comparison))
+    return tuple(
+        f"Today's {NAMES[item.beside.quantity]} reads {by_words(item.beside)} against the model: expect as much off "
+        "what stands here."
+        for item in apart
+        if item.beside.quantity in (Compared.POWER, Compared.DISCHARGE)
+    )
+
+
 def _doubts(held: tuple[Held, ...]) -> Iterator[str]:
     doubted = [item for item in held if item.beside.reason is not None and item.beside.reason.why == WhyNot.IN_DOUBT]
     if doubted:
@@ -163,9 +187,9 @@ def reason_words(reason: Reason) -> str:
         reason: The reason.
     """
     words = WHY_NOT[reason.why]
-    if reason.why in (WhyNot.KEY_MISSING, WhyNot.BY_THE_MODEL):
+    if reason.why in (WhyNot.NOT_READ, WhyNot.KEY_MISSING, WhyNot.BY_THE_MODEL):
         return f"{words} {_keys(reason)}"
-    if reason.why in (WhyNot.IN_DOUBT, WhyNot.NOT_READ) and reason.keys:
+    if reason.why == WhyNot.IN_DOUBT:
         return f"{words}: {_keys(reason)}{f' ({reason.text})' * bool(reason.text)}"
     return f"{words}{f': {reason.text}' * bool(reason.text)}"
 
@@ -187,9 +211,16 @@ def calibration_words(comparison: Comparison) -> tuple[str, ...]:
         return (
             f"Calibrated: {_powers(found)}, {found.ratio:.2f} times as much. Motor and drive together count as "
             f"{found.efficiency:.1%} efficient, alike for every option: electrical power, energy, emissions and money "
-            "are made with that. COP against today is unaffected.",
+            f"are made with that. COP against today is unaffected.{_kept_by_makers(comparison)}",
         )
     return (f"Not calibrated, though the case asks for it: {_why_not_calibrated(found)}.",)
+
+
+def _kept_by_makers(comparison: Comparison) -> str:
+    """Say whose year keeps the seasonal COP of its maker, which has the losses of its own motors in it."""
+    options = comparison.case.options.by_refrigerant if comparison.case.options else {}
+    names = [name for name, option in options.items() if option.seasonal_cop is not None]
+    return f" A new plant for {listed(names, 'and')} keeps the seasonal COP of its maker." if names else ""
 
 
 def _powers(found: Calibration) -> str:
@@ -202,7 +233,9 @@ def _powers(found: Calibration) -> str:
 def _why_not_calibrated(found: Calibration) -> str:
     reason, (low, high) = found.reason, found.allowed
     if reason is None or found.ratio is None:
-        return f"of the power, {reason_words(reason) if reason else WHY_NOT[WhyNot.NOT_READ]}"
+        return NO_RATIO[reason.why if reason else WhyNot.NOT_READ] + (
+            f" ({reason.text})" if reason and reason.text else ""
+        )
     return (
         f"{_powers(found)}, {found.ratio:.3f} times as much, is {WHY_NOT[reason.why]}. Allowed are {low:g} to "
         f"{high:g} times the power at the shaft"

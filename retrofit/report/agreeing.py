@@ -20,7 +20,7 @@ class Agreement:
         difference: Reading against the model.
         outcome: What holding them together gave, with its limit.
         reason: Why they could not be held together; empty if they could.
-        is_apart: Whether they differ.
+        state: The same as a state.
         causes: What likely makes the difference, and what to do about it.
     """
 
@@ -30,8 +30,13 @@ class Agreement:
     difference: str
     outcome: str
     reason: str
-    is_apart: bool
+    state: Outcome
     causes: tuple[tuple[str, str], ...]
+
+    @property
+    def is_apart(self) -> bool:
+        """Return whether reading and model differ. [-]"""
+        return self.state == Outcome.DIFFERS
 
 
 def agreements(comparison: Comparison, units: UnitSystem) -> tuple[Agreement, ...]:
@@ -68,6 +73,6 @@ def _agreement(held: Held, units: UnitSystem) -> Agreement:
         told(by_words(beside), units) or MISSING,
         told(outcome_words(held), units),
         told(reason_words(beside.reason), units) if beside.reason else "",
-        held.outcome == Outcome.DIFFERS,
+        held.outcome,
         tuple((cause.text, cause.todo) for cause in held.causes),
     )

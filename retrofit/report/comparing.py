@@ -83,7 +83,7 @@ def _reasons(entries: tuple[Entry, ...], notes: Notes) -> None:
 
 
 def _identity(entries: tuple[Entry, ...], units: UnitSystem, notes: Notes) -> tuple[Row, ...]:
-    verdicts = word_row("Verdict", ("in the plant" if i == 0 else e.verdict for i, e in enumerate(entries)))
+    verdicts = word_row("Verdict", (entry.verdict or "not judged" for entry in entries))
     return (
         verdicts,
         value_row("Safety class", "", entries, "safety_class", notes, str),

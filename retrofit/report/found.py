@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from retrofit.report.agreeing import Agreement, agreements
 from retrofit.report.judging import LEVEL_WORDS, source_title, spelled
@@ -52,7 +52,17 @@ def as_found(comparison: Comparison, units: UnitSystem) -> AsFound | None:
         tuple((item.name, derived_text(item, units), item.made_from) for item in found.derived),
         tuple(_problem(finding) for finding in found.problems),
         tuple(spelled(text) for text in found.missing),
-        agreements(comparison, units),
+        tuple(_spelled(item) for item in agreements(comparison, units)),
+    )
+
+
+def _spelled(item: Agreement) -> Agreement:
+    return replace(
+        item,
+        difference=spelled(item.difference),
+        outcome=spelled(item.outcome),
+        reason=spelled(item.reason),
+        causes=tuple((spelled(text), spelled(todo)) for text, todo in item.causes),
     )
 
 

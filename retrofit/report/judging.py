@@ -6,8 +6,8 @@ import re
 from collections.abc import Mapping
 from dataclasses import dataclass
 
-from retrofit.refrigerants import source
-from retrofit.study import Comparison, Entry, Family, Finding, Level
+from retrofit.refrigerants import source, with_hyphens
+from retrofit.study import Comparison, Entry, Family, Finding, Level, Verdict
 from retrofit.units import listed
 
 LEVEL_WORDS = {"stop": "Stop", "work": "Work", "unknown": "Unknown", "note": "Note"}
@@ -15,6 +15,14 @@ FAMILY_WORDS = {
     Family.KEEP: "in the plant today",
     Family.CONVERT: "conversion of this plant",
     Family.REPLACE: "a new plant, built for its class and pressures",
+}
+# The bar at the left of a verdict speaks the language of the components'.
+VERDICT_MARKS = {
+    Verdict.NOT_SUITABLE: "replace",
+    Verdict.OPEN: "unknown",
+    Verdict.MODIFICATIONS: "adjust",
+    Verdict.SUITABLE: "keep",
+    Verdict.NOT_JUDGED: "unknown",
 }
 SHARED_BY = 3  # refrigerants with the same advice: it is then written once, except about a stop
 
@@ -36,13 +44,14 @@ class Found:
 
 @dataclass(frozen=True)
 class Judged:
-    """A refrigerant with its verdict and findings; `reasons` is the short form for the summary."""
+    """A refrigerant with its verdict and findings; `mark` names the bar beside it, `reasons` is for the summary."""
 
     place: int
     name: str
     safety_class: str
     family: str
     verdict: str
+    mark: str
     reasons: str
     findings: tuple[Found, ...]
 
@@ -61,8 +70,8 @@ class Shared:
 
 
 def spelled(text: str) -> str:
-    """Return a text as readers know it: designations with a hyphen but in keys, and a blank before the percent sign."""
-    return re.sub(r"(?<=[0-9])%", "\N{NO-BREAK SPACE}%", re.sub(r"(?<!\.)\bR(?=[0-9])", "R-", text))
+    """Return a text as readers know it: designations with a hyphen, and a blank before the percent sign."""
+    return re.sub(r"(?<=[0-9])%", "\N{NO-BREAK SPACE}%", with_hyphens(text))
 
 
 def judged(comparison: Comparison) -> tuple[tuple[Judged, ...], tuple[Shared, ...]]:
@@ -127,6 +136,7 @@ def _judged(place: int, entry: Entry, numbers: Mapping[Subject, int]) -> Judged:
         entry.refrigerant.safety_class.text or "not stated",
         FAMILY_WORDS[entry.family],
         entry.verdict or "not judged",
+        VERDICT_MARKS[entry.verdict],
         reasons(entry),
         tuple(_found(finding, numbers) for finding in entry.findings),
     )

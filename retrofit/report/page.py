@@ -26,6 +26,7 @@ from retrofit.report.inputs import Input, LeftOut, Taken, defaults, fixed, input
 from retrofit.report.judging import Judged, Shared, judged, spelled, threshold_sources
 from retrofit.report.law import LawPart, law_part
 from retrofit.report.life import LifePart, life_part
+from retrofit.report.open_list import OpenRow, open_rows
 from retrofit.report.plain import css_string, plain
 from retrofit.report.plant import WHY_SAME_COOLING, has_plant
 from retrofit.report.practice import Method, jobs, method
@@ -117,6 +118,7 @@ class Page:
     inputs: tuple[Input, ...]
     defaults: tuple[Taken, ...]
     missing: tuple[LeftOut, ...]
+    open: tuple[OpenRow, ...]
     fixed: tuple[str, ...]
     grades: tuple[Graded, ...]
     difference_unit: str
@@ -167,7 +169,7 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
         deference=DEFERENCE,
         cautions=caution_groups(comparison),
         found=as_found(comparison, units),
-        calibration=calibration_text(comparison, units),
+        calibration=spelled(calibration_text(comparison, units)),
         comparison=comparison_table(comparison, units),
         plant_notes=(WHY_SAME_COOLING,) if has_plant(comparison) else (),
         environment=environment_table(comparison, units),
@@ -187,6 +189,7 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
         inputs=inputs(case, units),
         defaults=defaults(case, units),
         missing=missing(case),
+        open=open_rows(comparison),
         fixed=fixed(comparison),
         grades=tuple(_graded(entry, units) for entry in comparison.entries),
         difference_unit=units.label("temperature difference"),

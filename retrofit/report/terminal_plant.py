@@ -165,21 +165,19 @@ def baseline_text(comparison: Comparison, units: UnitSystem, columns: int, stron
 def _agreement_lines(comparison: Comparison, units: UnitSystem, columns: int) -> list[str]:
     """Return the readings beside the model, and what likely makes those differ that do."""
     found = agreements(comparison, units)
-    table = text_table(
-        [
-            Column("", "", is_words=True),
-            Column("Read", ""),
-            Column("Model", ""),
-            Column("Difference", ""),
-            Column("Outcome", "", is_words=True),
-        ],
-        [[item.name, item.read, item.modelled, item.difference, item.outcome] for item in found],
-    )
-    lines = ["Readings against the model of today's plant, at the point of the readings:", table] if found else []
+    lines = ["Readings against the model of today's plant at the same point:"] if found else []
     for item in found:
-        if item.outcome == Outcome.NOT_COMPARABLE:
-            lines.append(paragraph(f"{item.name}, {item.outcome}: {item.reason}.", columns, indent="  "))
-        if item.is_apart:
-            text = "; ".join(f"{cause}: {todo}" for cause, todo in item.causes)
-            lines.append(paragraph(f"{item.name}, likely causes: {text}.", columns, indent="  "))
-    return lines
+        if item.state == Outcome.NOT_COMPARABLE:
+            lines.append(f"{item.name}: {item.outcome}: {item.reason}.")
+        elif item.state != Outcome.NOT_READ:
+            causes = "; ".join(f"{cause} ({todo})" for cause, todo in item.causes)
+            likely = f". Likely causes: {causes}" if causes else ""
+            both = f"{item.read} read, {item.modelled} by the model, {item.difference}"
+            lines.append(f"{item.name}: {both}: {item.outcome}{likely}.")
+    absent = [
+        item.name if item.name[:2].isupper() else item.name[:1].lower() + item.name[1:]
+        for item in found
+        if item.state == Outcome.NOT_READ
+    ]
+    lines += [f"Not read: {'; '.join(absent)}."] if absent else []
+    return [paragraph(line, columns, indent="  ", first="  " if place else "") for place, line in enumerate(lines)]

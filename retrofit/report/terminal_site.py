@@ -74,7 +74,8 @@ def law_text(comparison: Comparison, units: UnitSystem, columns: int, strong: Em
     basis = comparison.law
     if basis is None:
         return ""
-    heading = strong(f"Law: duties and bans by the tables for {basis.jurisdiction}, today and from the date of change")
+    whose = f"duties and bans by the tables for {basis.jurisdiction}, today and from the date of change"
+    heading = strong(f"Law: {whose if basis.tables else 'not checked'}")
     entries = [entry for entry in comparison.entries if entry.law is not None]
     table = [_law_table(comparison, entries, units)] if entries else []
     said = [*map(_marks_used, table), *_remarks(comparison, basis)]

@@ -31,7 +31,9 @@ def year_csv(comparison: Comparison) -> str:
         entry = entries[option["refrigerant"]]
         cautions = "; ".join(caution.title for caution in entry.cautions)
         safety = {"safety_class": entry.refrigerant.safety_class.value, "cautions": cautions}
+        calibrated = {"calibration": told["calibration"]["text"]} if told["calibration"] else {}
         first = {"refrigerant": option["refrigerant"], "deed": option["deed"], **safety, "currency": told["currency"]}
+        first |= calibrated
         lines.append(dict(_cells(first | option)))
     text = io.StringIO()
     writer = csv.DictWriter(text, fieldnames=_names(lines), extrasaction="ignore", lineterminator="\n")

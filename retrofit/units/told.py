@@ -93,7 +93,8 @@ def _told(found: re.Match[str], units: UnitSystem) -> str:
     except (KeyError, OverflowError, TypeError, ValueError):
         return found[1]  # no token of ours: a user's text may hold these characters
     first, *second = texts
-    return f"{first} ({second[0]})" if second else first
+    is_other = second and second[0].replace("\N{NO-BREAK SPACE}", " ") != first.replace("\N{NO-BREAK SPACE}", " ")
+    return f"{first} ({second[0]})" if is_other else first
 
 
 def _in(system: UnitSystem, form: str, kind: str, value: str = "", spec: str = "") -> str:

@@ -50,7 +50,8 @@ def test_numbers_are_those_of_the_json(text, lived):
     assert [len(found) for found in (year, warming, money)] == [8, 8, 8]
     for a, b, c, option in list(zip(year, warming, money, told, strict=True))[1:]:
         assert number(a[1]) == pytest.approx(option["year"]["energy_J"] / J_PER_KWH, rel=6e-4)
-        assert number(b[7]) == pytest.approx(option["emissions"]["total_kg"] / 1000.0, rel=6e-4)
+        tonnes = option["emissions"]["total_kg"] / 1000.0
+        assert number(b[7]) == pytest.approx(tonnes, rel=6e-4, abs=0.5)  # whole tonnes
         assert number(c[1]) == pytest.approx(option["money"]["first_cost_currency"]["base"], rel=6e-4)
         assert number(c[4]) == pytest.approx(option["money"]["payback_years"], abs=0.051)
         assert ("beyond" in c[4]) == (option["money"]["payback_years"] > option["emissions"]["life_years"])
@@ -60,9 +61,10 @@ def test_what_is_assumed_and_stopped_is_said(text):
     """The gate of the flammable option, the meter, the seed and the limits assumed stand in words."""
     flat = " ".join(text.split())
 
-    assert "A check stops R454C" in flat
-    assert "Not ranked, whatever the weights: R454C" in flat
-    assert "ratio 0.98" in flat
+    assert "A check stops R-454C" in flat
+    assert "Not ranked, whatever the weights: R-454C" in flat
+    assert "ratio 1.09" in flat
+    assert "Calibrated: power 54 kW read" in flat
     assert "with seed 1" in flat
     assert "Plus or minus assumed for: " in flat
 
@@ -85,7 +87,7 @@ def test_hours_without_their_load_are_named(lived):
 
     text = " ".join(year_text(replace(comparison, life=life), SI, 100).split())
 
-    assert "some of it unmet, so that part of a lower electricity is load not met: R454B 41 h, 33.3 kWh" in text
+    assert "some of it unmet, so that part of a lower electricity is load not met: R-454B 41 h, 33.3 kWh" in text
 
 
 def test_what_the_case_has_no_table_for_is_said(lived):

@@ -4,10 +4,15 @@ from __future__ import annotations
 
 from pathlib import Path
 
+import numpy as np
 import pytest
+from CoolProp.CoolProp import PropsSI
 
 from retrofit.case import Case, read_case
+from retrofit.cycle import Settings, solve_cycle
+from retrofit.properties import fluid
 from retrofit.study import Comparison, Entry, Installed, compare
+from retrofit.study.installed import ExistingPlant, efficiency_model, existing_plant, machine_at
 
 CORE = """
 [plant]
@@ -237,3 +242,114 @@ def test_second_law_between_the_media(usual: Comparison) -> None:
 
     for entry in usual.entries:
         assert plant_of(entry).full.cop < carnot
+
+
+MACHINE = {"swept": 201.0 / 3600.0, "isentropic": 0.68, "volumetric": 0.88}
+
+
+def installed_of(case: Case, existing: str = "R134a") -> ExistingPlant:
+    """Return the plant of a case at -8 / 42 degC dew, solved for itself."""
+    refrigerant, duty = fluid(existing), case.duty
+    cycle = solve_cycle(
+        refrigerant,
+        refrigerant.p_dew(265.15),
+        refrigerant.p_dew(315.15),
+        Settings(
+            useful_superheat_K=duty.useful_superheat_K,
+            line_superheat_K=duty.line_superheat_K,
+            subcooling_K=duty.subcooling_K,
+            isentropic_efficiency=MACHINE["isentropic"],
+            volumetric_efficiency=MACHINE["volumetric"],
+        ),
+    )
+    return existing_plant(case, refrigerant, cycle, efficiency_model(case, refrigerant), MACHINE["swept"])
+
+
+def one_fluid(tmp_path: Path, superheat: str = "6 K", subcooling: str = "3 K", **parts: str) -> Case:
+    """Return the case with R134a, whose dew and bubble points are one, and other superheat and subcooling."""
+    text = case_of(tmp_path, existing="R134a", cooling="900 kW", candidates='"R1234yf"', **parts).text
+    text = text.replace('useful_superheat = "6 K"', f'useful_superheat = "{superheat}"')
+    path = tmp_path / "one.toml"
+    path.write_text(text.replace('subcooling = "3 K"', f'subcooling = "{subcooling}"'), encoding="utf-8")
+    return read_case(path)
+
+
+@pytest.mark.parametrize(
+    ("superheat", "subcooling", "shares"),
+    [
+        ("6 K", "3 K", (0.65, 0.7)),  # 6/10 and 3/10: the usual shares are larger
+        ("8 K", "9 K", (0.8, 0.9)),  # 8/10 and 9/10
+        ("6.5 K", "7 K", (0.65, 0.7)),  # just the usual ones
+        ("9.5 K", "7.5 K", (0.95, 0.75)),
+    ],
+)
+def test_shares_of_superheat_and_subcooling_are_todays_where_these_are_larger(
+    superheat: str, subcooling: str, shares: tuple[float, float], tmp_path: Path
+) -> None:
+    """By hand: air enters at 2 degC, 10 K above the -8 degC of the evaporator; at 32 degC, 10 K below the 42 degC."""
+    machine = installed_of(one_fluid(tmp_path, superheat, subcooling)).machine
+
+    assert float(machine.superheat_share) == pytest.approx(shares[0], rel=1e-6)
+    assert float(machine.subcooling_share) == pytest.approx(shares[1], rel=1e-6)
+
+
+def test_a_flooded_evaporator_has_no_share_of_superheat(tmp_path: Path) -> None:
+    """Its superheat is picked up behind the pool, so that no difference bounds it."""
+    machine = installed_of(one_fluid(tmp_path, "9.5 K", arrangement="flooded")).machine
+
+    assert float(machine.superheat_share) == np.inf
+
+
+def test_todays_flows_of_heat_come_from_the_swept_volume(tmp_path: Path) -> None:
+    """By hand from the definitions: mass flow = swept volume x volumetric efficiency x density at the inlet.
+
+    Cooling = mass flow x (outlet - inlet of the evaporator). Air takes 5 K and 6 K over it: its capacity rates are
+    cooling / 5 K and heat / 6 K. Crossflow: every part meets air as it enters, so 1 - exp(-UA/C) =
+    sum(heat / difference) / C. The refrigerant's states come from CoolProp.
+    """
+    plant = installed_of(one_fluid(tmp_path))
+    p = [PropsSI("P", "T", T, "Q", 1, "R134a") for T in (265.15, 315.15)]
+    h_suction, rho = (PropsSI(name, "T", 265.15 + 14.0, "P", p[0], "R134a") for name in "HD")
+    h_out = PropsSI("H", "T", 265.15 + 6.0, "P", p[0], "R134a")
+    h_liquid = PropsSI("H", "T", 315.15 - 3.0, "P", p[1], "R134a")
+    s_suction = PropsSI("S", "T", 265.15 + 14.0, "P", p[0], "R134a")
+    h_discharge = h_suction + (PropsSI("H", "S", s_suction, "P", p[1], "R134a") - h_suction) / MACHINE["isentropic"]
+    flow = MACHINE["swept"] * MACHINE["volumetric"] * rho
+    cooling, heat = flow * (h_out - h_liquid), flow * (h_discharge - h_liquid)
+    evaporator, condenser = plant.machine.evaporator, plant.machine.condenser
+    effect = {
+        "evaporator": 1.0 - np.exp(-float(evaporator.conductance_W_per_K) * 5.0 / cooling),
+        "condenser": 1.0 - np.exp(-float(condenser.conductance_W_per_K) * 6.0 / heat),
+    }
+
+    assert float(plant.today_W) == pytest.approx(cooling, rel=1e-4)
+    assert float(plant.needed_W) == pytest.approx(cooling, rel=1e-4)  # less than the 900 kW of the case
+    assert float(evaporator.secondary.capacity_rate_W_per_K) == pytest.approx(cooling / 5.0, rel=1e-4)
+    assert float(condenser.secondary.capacity_rate_W_per_K) == pytest.approx(heat / 6.0, rel=1e-4)
+    # Evaporator: 10 K while it boils; superheat from 10 K down to 4 K, a logarithmic mean of 6 / ln(10 / 4) K.
+    boiling = (PropsSI("H", "P", p[0], "Q", 1, "R134a") - h_liquid) / (h_out - h_liquid)
+    mean = boiling / 10.0 + (1.0 - boiling) * np.log(10.0 / 4.0) / 6.0
+    assert effect["evaporator"] == pytest.approx(5.0 * mean, rel=1e-3)
+    # Condenser: between the discharge temperature less 32 degC at its beginning and 7 K at the end of subcooling.
+    T_discharge = PropsSI("T", "H", h_discharge, "P", p[1], "R134a")
+    assert 6.0 / (T_discharge - 305.15) < effect["condenser"] < 6.0 / 7.0
+
+
+def test_a_flow_with_its_specific_heat_is_a_capacity_rate(tmp_path: Path) -> None:
+    """By hand: 20 kg/s of water at 4200 J/(kg K) are 84 kW/K."""
+    text = one_fluid(tmp_path).text.replace('outlet = "38 degC"', 'flow = "20 kg/s"\nspecific_heat = "4.2 kJ/kgK"')
+    path = tmp_path / "flow.toml"
+    path.write_text(text, encoding="utf-8")
+
+    assert float(installed_of(read_case(path)).machine.condenser.secondary.capacity_rate_W_per_K) == 84_000.0
+
+
+def test_a_search_at_other_media_begins_where_they_moved_to(tmp_path: Path) -> None:
+    """By hand: air 3 K warmer at the evaporator and 5 K colder at the condenser moves -8 / 42 degC to -5 / 37 degC."""
+    plant = installed_of(one_fluid(tmp_path))
+    machine, starts = machine_at(plant, fluid("R134a"), 278.15, 300.15)
+
+    assert float(starts[0]) == pytest.approx(268.15, abs=1e-6)
+    assert float(starts[1]) == pytest.approx(310.15, abs=1e-6)
+    assert (machine.evaporator.secondary.T_in_K, machine.condenser.secondary.T_in_K) == (278.15, 300.15)
+    assert machine.evaporator.conductance_W_per_K == plant.machine.evaporator.conductance_W_per_K

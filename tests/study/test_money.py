@@ -9,11 +9,11 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
+from retrofit.checks.law import law_for, shipped
 from retrofit.refrigerants import find
 from retrofit.study.accounts import accounts
 from retrofit.study.emissions import year_ends
 from retrofit.study.first_cost import first_cost
-from retrofit.study.law import LawCheck
 from retrofit.study.money import (
     AbatementState,
     PaybackState,
@@ -32,6 +32,7 @@ from retrofit.study.spread import base_only, triangular
 from retrofit.study.sums import ComparisonState, Missing, SumState
 
 KWH, KW = 3.6e6, 1e3
+EU = (shipped()["eu-2024-573.toml"],)
 TODAY = Entry(find("R404A"), "keep", "ok", None, ())
 NEW = Entry(find("R448A"), "convert", "ok", None, ())
 PLANT = Entry(find("R290"), "replace", "ok", None, ())
@@ -215,11 +216,12 @@ def test_a_year_part_by_part(priced):
     assert found.sum.state is SumState.AT_LEAST
 
 
-@pytest.mark.parametrize(("months", "unknown", "cost"), [(3.0, (), 600.0), (None, (), 0.0), (None, ("charge",), None)])
-def test_leak_checks_follow_the_law(priced, months, unknown, cost):
-    """By hand: every 3 months at 150 are 600 a year; tables asking for none cost nothing; unknown is not nothing."""
-    case = priced(money={"leak_check": 150})
-    law = LawCheck("R404A", "EU", date(2027, 1, 1), None, None, "", {}, {}, (), months, None, (), unknown)
+@pytest.mark.parametrize(("kg", "cost"), [(260.0, 600.0), (1.2, 0.0), (None, None)])
+def test_leak_checks_follow_the_law(priced, kg, cost):
+    """By hand: 1020 t CO2e every 3 months at 150 are 600 a year; under 5 t nothing is due; unknown is not nothing."""
+    case = priced(money={"leak_check": 150}, law={"jurisdiction": "EU", "equipment": "supermarket"})
+    spread = None if kg is None else (kg, kg, kg)
+    law = law_for(case, TODAY.refrigerant, spread, EU, date(2027, 1, 1), read_on=date(2026, 12, 1))
 
     found = yearly_cost(case, replace(plan_as_is(case, TODAY), law=law), Use(), base_only)
 

@@ -104,7 +104,7 @@ def _life(comparison: Comparison, units: UnitSystem) -> Iterator[Row]:
     """Yield the answer of the remaining life, how it was drawn, and what is left out."""
     topic, words, life = "Remaining life", outlook(comparison, units), life_of_result(comparison)
     if calibrated := calibration_text(comparison, units):
-        yield topic, "Calibration", calibrated, ""
+        yield topic, "Calibration", spelled(calibrated), ""
     for text in (*(matter.text for matter in words.matters), words.stopped, words.meter, words.swing, *words.ranking):
         if text:
             yield topic, "Answer", spelled(text), ""
