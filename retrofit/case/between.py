@@ -15,6 +15,7 @@ from retrofit.case.positions import KeyPath
 from retrofit.case.rules import DIFFER, GIVEN_ONCE, NEEDS, NOT_BOTH, ORDERS, RISING, Order
 from retrofit.case.whole_year import problems_of_options, problems_of_year
 from retrofit.case.written import Written, path_of
+from retrofit.refrigerants import with_hyphens
 from retrofit.units import SI, listed, quoted
 
 Complaints = Iterator[tuple[KeyPath, str]]
@@ -209,9 +210,10 @@ def _repeated(written: Written, key: str, existing: str | None = None) -> Compla
     for index, name in enumerate(written.value(key) or []):
         where = (*path_of(key), index)
         if name is not None and name == existing:
-            yield where, f"{name} is the refrigerant in the plant, which is always compared; leave it out here"
+            told = f"{with_hyphens(name)} is the refrigerant in the plant, which is always compared"
+            yield where, f"{told}; leave it out here"
         elif name is not None and name in seen:
-            yield where, f"{name} is in the list twice; leave one out"
+            yield where, f"{with_hyphens(name)} is in the list twice; leave one out"
         seen.add(name)
 
 
@@ -220,16 +222,18 @@ def _chosen(written: Written) -> Complaints:
     existing, candidates = written.value("plant.refrigerant"), written.value("compare.candidates") or []
     if existing is None or not candidates or None in candidates:
         return
-    known = [existing, *candidates]
+    known = list(dict.fromkeys((existing, *candidates)))
     chosen = {name: written.value(f"report.{name}") for name in ("recommended", "fallback")}
     for name, refrigerant in chosen.items():
         if refrigerant is not None and refrigerant not in known:
             yield (
                 path_of(f"report.{name}"),
-                f"{refrigerant} is not compared here; write {listed(known)}, or add it to compare.candidates",
+                f"{with_hyphens(refrigerant)} is not compared here; write {listed(map(quoted, known))}, or add it to "
+                "compare.candidates",
             )
     if chosen["fallback"] is not None and chosen["fallback"] == chosen["recommended"]:
-        yield path_of("report.fallback"), f"{chosen['fallback']} is what is recommended; name another, or leave it out"
+        same = with_hyphens(chosen["fallback"])
+        yield path_of("report.fallback"), f"{same} is what is recommended; name another, or leave it out"
 
 
 def _thresholds(written: Written) -> Complaints:

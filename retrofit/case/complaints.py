@@ -70,10 +70,16 @@ def _not_a_table(where: KeyPath, value: object) -> str:
 
 def _unknown_key(where: KeyPath, value: object) -> str:
     key, place = str(where[-1]), "at the top of the file" if len(where) == 1 else f"in [{_name(where[:-1])}]"
+    table = _table_at(where[:-1])
+    known = _keys(table)
+    # A key of this table that says more is nearer than the same name in another one.
+    fuller = [field for field in table.model_fields.values() if key in (field.alias or "").split("_")]
+    if fuller:
+        meant = listed((f"{field.alias} ({(field.description or '').rstrip('.')})" for field in fuller), "or")
+        return f"there is no key {quoted(key)} {place}; write {meant}"
     home = _home(key, value)
     if home and home != place:
         return f"{key} belongs {home}, not {place}; move it there"
-    known = _keys(_table_at(where[:-1]))
     thing = "table" if isinstance(value, dict) else "key"
     return f"there is no {thing} {quoted(key)} {place}{close_to(key, known)}; known are {listed(known, 'and')}"
 

@@ -108,11 +108,19 @@ class Compressor(Table):
         Quantity("fraction", "0 %", "100 %", "a share of full speed", above_low=True, example="30 %"),
     ] = key("lowest_speed", "Lowest speed, as a share of full speed.", None)
     rated_current_A: Annotated[float | None, CURRENT] = key(
-        "rated_current", "Rated current of all motors on their nameplates.", None
+        "rated_current",
+        "Rated current of all motors on their nameplates.",
+        None,
+        where="nameplates of the motors, added up",
     )
     rated_power_W: Annotated[
         float | None, Quantity("power", "0 W", "100 MW", "no single plant has more", above_low=True)
     ] = key("rated_power", "Rated electrical power of all motors on their nameplates.", None)
     highest_suction_K: Annotated[
         float | None, Quantity("temperature", "-120 degC", "60 degC", "pull-down lies within it", example="0 degC")
-    ] = key("highest_suction", "Highest evaporating dew temperature, at pull-down.", None)
+    ] = key(
+        "highest_suction",
+        "Highest evaporating dew temperature, at pull-down.",
+        None,
+        where="log of the controls at pull-down, or the setting of the crankcase regulator",
+    )

@@ -26,6 +26,10 @@ class Day(FileValue):
         """Return a date, as text."""
         return "2027-04-01"
 
+    def form(self) -> str:
+        """Return a date, as text."""
+        return self.sample()
+
     def read(self, value: object, p_ambient_Pa: float | None = None) -> datetime.date:
         """Return the day."""
         found = day_of(value)
@@ -66,6 +70,10 @@ class YesNo(FileValue):
     def sample(self) -> str:
         """Return one of them, as text."""
         return "true"
+
+    def form(self) -> str:
+        """Return both, as text."""
+        return "true or false"
 
     def read(self, value: object, p_ambient_Pa: float | None = None) -> bool:
         """Return it."""

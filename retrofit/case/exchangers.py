@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Annotated
 
 from retrofit.case.numbers import FilmFactors, FilmFactorValue
@@ -39,16 +39,29 @@ class Exchanger(Table):
     """
 
     medium: Annotated[str | None, Choice(("air", "water", "brine"), (("GLYCOL", "brine"),))] = key(
-        "medium", "What flows on the other side.", None
+        "medium", "What flows on the other side.", None, where="at the exchanger"
     )
-    inlet_K: Annotated[float | None, INLET] = key("inlet", "Temperature at which it enters.", None)
-    outlet_K: Annotated[float | None, INLET] = key("outlet", "Temperature at which it leaves.", None)
+    inlet_K: Annotated[float | None, INLET] = key(
+        "inlet",
+        "Temperature at which it enters.",
+        None,
+        where="thermometer in the stream before the exchanger, at the duty of the case",
+    )
+    outlet_K: Annotated[float | None, INLET] = key(
+        "outlet",
+        "Temperature at which it leaves.",
+        None,
+        where="thermometer in the stream behind the exchanger, at the duty of the case",
+    )
     flow_kg_per_s: Annotated[float | None, FLOW] = key("flow", "Its mass flow, instead of the outlet.", None)
     specific_heat_J_per_kgK: Annotated[float | None, SPECIFIC_HEAT] = key(
         "specific_heat", "Its specific heat, beside the flow.", None
     )
     arrangement: Annotated[str | None, Choice(("counterflow", "crossflow", "flooded"))] = key(
-        "arrangement", "How the two streams meet; flooded: the refrigerant has one temperature.", None
+        "arrangement",
+        "How the two streams meet; flooded: the refrigerant has one temperature.",
+        None,
+        where="drawings: crossflow for finned coils, counterflow for plates",
     )
     film_factor: Annotated[FilmFactors, FilmFactorValue(), _AS_TODAY] = key(
         "film_factor", "Overall conductance with a candidate over today's: a number, or one for each.", 1.0
@@ -64,3 +77,10 @@ class Evaporator(Exchanger):
 
 class Condenser(Exchanger):
     """Air, water or brine that the condenser warms, at the duty point."""
+
+    highest_inlet_K: Annotated[float | None, replace(INLET, example="28 degC")] = key(
+        "highest_inlet",
+        "Highest temperature at which it enters while the plant runs; for air plant.highest_ambient if left out.",
+        None,
+        where="cooling tower or well in summer, design data of the water or dry cooler",
+    )

@@ -2,10 +2,14 @@
 
 from __future__ import annotations
 
+from dataclasses import dataclass
 from typing import Any
+
+from pydantic.fields import FieldInfo
 
 from retrofit.case.model import Case, field_of
 from retrofit.case.money import Options, Range
+from retrofit.case.table import WHERE, Items
 from retrofit.case.values import FileValue
 
 
@@ -18,6 +22,48 @@ def meaning(key: str) -> str:
     """
     _, field = field_of(key) or ("", None)
     return (field and field.description) or key.rpartition(".")[2]
+
+
+@dataclass(frozen=True)
+class KeyFacts:
+    """What there is to know of a key of the case file.
+
+    Attributes:
+        key: Its full name.
+        meaning: What it is.
+        where: Where it is read on site, or who knows it; empty if nowhere in particular.
+        form: How its value is written.
+    """
+
+    key: str
+    meaning: str
+    where: str
+    form: str
+
+
+def facts_of(key: str) -> KeyFacts:
+    """Return what there is to know of a key, as schema, template and the list of what is missing have it.
+
+    Args:
+        key: Its full name, such as "plant.charge" or "options.R454C.charge". [-]
+    Raises: KeyError if the case file has no such key.
+    """
+    found = field_of(key)
+    if found is None:
+        raise KeyError(key)
+    field = found[1]
+    extra = field.json_schema_extra
+    where = extra.get(WHERE, "") if isinstance(extra, dict) else ""
+    return KeyFacts(key, field.description or "", str(where), _form(field))
+
+
+def _form(field: FieldInfo) -> str:
+    for extra in field.metadata:
+        if isinstance(extra, FileValue):
+            return extra.form()
+        if isinstance(extra, Items):
+            return extra.how
+    return "text in quotes"
 
 
 def quantity(case: Case, key: str) -> tuple[str, float] | None:

@@ -70,14 +70,17 @@ class Law(Table):
         "jurisdiction",
         "Whose law: EU or a member of it, GB (Great Britain), NI (Northern Ireland), US, US-CA (California), or other.",
         None,
+        where="where the plant stands",
     )
-    date_of_change: Annotated[datetime.date | None, DAY] = key("date_of_change", "Day of the changeover.", None)
+    date_of_change: Annotated[datetime.date | None, DAY] = key(
+        "date_of_change", "Day of the changeover.", None, where="plan of the changeover"
+    )
     remaining_life_years: Annotated[
         float | None, Quantity("years", "0 years", "60 years", "no plant runs longer after a change", above_low=True)
-    ] = key("remaining_life", "Years the plant is to run after the change.", None)
+    ] = key("remaining_life", "Years the plant is to run after the change.", None, where="owner")
     end: Annotated[datetime.date | None, DAY] = key("end", "Day on which the plant is to be taken out of use.", None)
     equipment: Annotated[str | None, Choice(EQUIPMENT, _HINTS)] = key(
-        "equipment", "Kind of equipment, as the tables of law name it.", None
+        "equipment", "Kind of equipment, as the tables of law name it.", None, where="what the plant is for"
     )
     arrangement: Annotated[str | None, Choice(ARRANGEMENTS, _BUILT)] = key(
         "arrangement", "How the equipment is put together; limits for new equipment differ by it.", None
@@ -101,8 +104,15 @@ class Law(Table):
     )
     annual_leak_rate: Annotated[
         float | None, Quantity("fraction", "0 %", "100 %", "a share of the full charge", example="15 %")
-    ] = key("annual_leak_rate", "Refrigerant lost in a year, as a share of the charge.", None)
+    ] = key(
+        "annual_leak_rate",
+        "Refrigerant lost in a year, as a share of the charge.",
+        None,
+        where="log book: refrigerant added in the last years",
+    )
     product_below_minus_50: Annotated[bool, YesNo(), WhyDefault(_STRICTER)] = key(
         "product_below_minus_50", "Whether the plant cools a product below -50 degC.", False
     )
-    code: Annotated[str | None, Choice(CODES)] = key("code", "Which charge rules the room is checked against.", None)
+    code: Annotated[str | None, Choice(CODES)] = key(
+        "code", "Which charge rules the room is checked against.", None, where="law of the place, authority or insurer"
+    )

@@ -2,27 +2,25 @@
 
 from __future__ import annotations
 
+import io
 import os
 import stat
-import struct
-import zlib
-from collections.abc import Iterator
+import warnings
 from dataclasses import dataclass
 from pathlib import Path, PurePath
 from typing import Any
-from xml.etree import ElementTree
 
 from pydantic import GetCoreSchemaHandler, ValidationInfo
 from pydantic_core import CoreSchema, core_schema
 
+from retrofit.case.drawing import check_drawing
 from retrofit.case.values import FileValue, is_hidden
 from retrofit.errors import QuantityError
 from retrofit.units import described, quoted, shown
 
 LARGEST_LOGO_BYTES = 300_000
 LARGEST_SIDE = 4000  # pixels
-_SVG = "{http://www.w3.org/2000/svg}svg"
-_PNG = b"\x89PNG\r\n\x1a\n"
+_PNG, _JPEG = b"\x89PNG\r\n\x1a\n", b"\xff\xd8\xff"
 _WANTED = "write the path of a PNG, JPEG or SVG file in the folder of the case file or below it"
 
 
@@ -72,8 +70,17 @@ def logo_at(folder: Path, value: object) -> Logo:
         raise QuantityError(f"{quoted(value)} is no path; {_WANTED}")
     if os.path.isabs(value) or ".." in PurePath(value).parts:
         raise QuantityError(f"{quoted(value)} leads out of the folder of the case file; {_WANTED}")
+    if not _is_inside(folder, value):
+        raise QuantityError(f"{quoted(value)} is a link out of the folder of the case file; {_WANTED}")
     content = _bytes_of(folder / value, value)
     return Logo(value, _media_type(content, value), content)
+
+
+def _is_inside(folder: Path, value: str) -> bool:
+    try:
+        return (folder / value).resolve().is_relative_to(folder.resolve())
+    except (OSError, ValueError, RuntimeError):
+        return True  # reading it says what is wrong
 
 
 def _bytes_of(path: Path, name: str) -> bytes:
@@ -97,73 +104,40 @@ def _bytes_of(path: Path, name: str) -> bytes:
 def _media_type(content: bytes, name: str) -> str:
     """Return the media type of a picture, refusing what a browser could not show or what hides more than it shows."""
     try:
-        if content.startswith(_PNG):
-            _check_sides(*_png_sides(content))
-            return "image/png"
-        if content.startswith(b"\xff\xd8\xff"):
-            _check_sides(*_jpeg_sides(content))
-            return "image/jpeg"
-        _check_svg(content)
-    except (ValueError, struct.error, IndexError) as error:
+        if content.startswith((_PNG, _JPEG)):
+            return _check_picture(content)
+        check_drawing(content, _check_picture)
+    except ValueError as error:
         raise QuantityError(f"{quoted(name)} is no picture that can be shown: {error}") from None
     return "image/svg+xml"
 
 
+def _check_picture(content: bytes) -> str:
+    """Return the media type of a PNG or JPEG picture that can be decoded to its last pixel, and is not too large."""
+    from PIL import Image
+
+    try:
+        with warnings.catch_warnings():
+            warnings.simplefilter("error")  # of a picture that would unpack to gigabytes
+            with Image.open(io.BytesIO(content), formats=("PNG", "JPEG")) as picture:
+                _check_sides(*picture.size)
+                kind = str(picture.format)
+                picture.verify()
+            with Image.open(io.BytesIO(content), formats=("PNG", "JPEG")) as picture:
+                picture.load()
+    except _SizeError:
+        raise
+    except Exception as error:  # of a damaged file the library says it in many ways
+        raise ValueError(
+            f"the picture is damaged or is no PNG or JPEG ({shown(str(error), 80)}); save it again"
+        ) from None
+    return f"image/{kind.lower()}"
+
+
+class _SizeError(ValueError):
+    """A picture has more pixels than a report may carry."""
+
+
 def _check_sides(width: int, height: int) -> None:
     if not (0 < width <= LARGEST_SIDE and 0 < height <= LARGEST_SIDE):
-        raise ValueError(f"it has {width} by {height} pixels; allowed are 1 to {LARGEST_SIDE} each way")
-
-
-def _png_sides(content: bytes) -> tuple[int, int]:
-    """Return width and height of a PNG picture whose chunks are whole. Source: PNG, third edition (W3C), 5.3."""
-    chunks = list(_png_chunks(content))
-    kinds = [kind for kind, _ in chunks]
-    if kinds[:1] != [b"IHDR"] or b"IDAT" not in kinds or kinds[-1] != b"IEND":
-        raise ValueError("the PNG file is not whole; save it again")
-    width, height = struct.unpack(">II", chunks[0][1][:8])
-    return width, height
-
-
-def _png_chunks(content: bytes) -> Iterator[tuple[bytes, bytes]]:
-    at = len(_PNG)
-    while at < len(content):
-        (length,) = struct.unpack(">I", content[at : at + 4])
-        body = content[at + 4 : at + 8 + length]
-        (digest,) = struct.unpack(">I", content[at + 8 + length : at + 12 + length])
-        if zlib.crc32(body) != digest:
-            raise ValueError("the PNG file is damaged; save it again")
-        yield body[:4], body[4:]
-        if body[:4] == b"IEND":
-            return
-        at += 12 + length
-
-
-def _jpeg_sides(content: bytes) -> tuple[int, int]:
-    """Return width and height of a JPEG picture from its frame header. Source: ITU-T T.81, B.1.1 and B.2.2."""
-    at = 2
-    while at + 9 < len(content):
-        if content[at] != 0xFF:
-            break
-        marker = content[at + 1]
-        if 0xC0 <= marker <= 0xCF and marker not in (0xC4, 0xC8, 0xCC):
-            height, width = struct.unpack(">HH", content[at + 5 : at + 9])
-            return width, height
-        (length,) = struct.unpack(">H", content[at + 2 : at + 4])
-        at += 1 if marker == 0xFF else 2 + length
-    raise ValueError("the JPEG file is not whole; save it again")
-
-
-def _check_svg(content: bytes) -> None:
-    """Refuse what is no SVG drawing, and one with declarations: they can make a small file a huge one."""
-    try:
-        text = content.decode("utf-8-sig")
-    except UnicodeDecodeError:
-        raise ValueError("it is neither PNG nor JPEG nor SVG in UTF-8") from None
-    if "<!DOCTYPE" in text.upper() or "<!ENTITY" in text.upper():
-        raise ValueError("the SVG file has a DOCTYPE; take that line out, drawing programs call it plain SVG")
-    try:
-        root = ElementTree.fromstring(text.encode())
-    except (ElementTree.ParseError, RecursionError, LookupError):
-        raise ValueError("it is neither PNG nor JPEG nor well-formed SVG") from None
-    if root.tag != _SVG:
-        raise ValueError("it is neither PNG nor JPEG nor SVG")
+        raise _SizeError(f"it has {width} by {height} pixels; allowed are 1 to {LARGEST_SIDE} each way")

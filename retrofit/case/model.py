@@ -15,6 +15,7 @@ from typing import TYPE_CHECKING, Annotated, get_args
 from pydantic import Field
 from pydantic.fields import FieldInfo
 
+from retrofit.case.approvals import Approvals
 from retrofit.case.compressor import Compressor
 from retrofit.case.emissions import Emissions
 from retrofit.case.exchangers import Condenser, Evaporator
@@ -55,6 +56,7 @@ class CaseFile(Table):
     valve: Valve | None = key("valve", "The expansion valves.", None)
     receiver: Receiver | None = key("receiver", "The liquid receiver of the high side.", None)
     controls: Controls | None = key("controls", "Settings of the controls today.", None)
+    approvals: Approvals | None = key("approvals", "What makers and engineers have answered in writing.", None)
     room: Room | None = key("room", "The room that a leak would fill.", None)
     machinery_room: MachineryRoom | None = key("machinery_room", "The machinery room.", None)
     law: Law | None = key("law", "Where the plant stands in law, and for how long.", None)
@@ -146,6 +148,7 @@ class Case:
     receiver: Receiver | None = None
     controls: Controls | None = None
     law: Law | None = None
+    approvals: Approvals | None = None
     room: Room | None = None
     machinery_room: MachineryRoom | None = None
     report: Report | None = None

@@ -12,6 +12,7 @@ from retrofit.case.numbers import Number
 from retrofit.case.table import Table, WhyDefault, key
 from retrofit.case.values import FileValue, Quantity, Text, designation_of
 from retrofit.errors import QuantityError
+from retrofit.refrigerants import with_hyphens
 from retrofit.units import described, quoted
 
 LARGEST_SUM = 1e12
@@ -34,6 +35,10 @@ class RangeValue(FileValue):
     def sample(self) -> str:
         """Return a sum, as text."""
         return "[900, 1200, 1800]"
+
+    def form(self) -> str:
+        """Return how a sum is written."""
+        return f"1200, or low, base and high: {self.sample()}"
 
     def read(self, value: object, p_ambient_Pa: float | None = None) -> Range:
         """Return the range."""
@@ -65,6 +70,10 @@ class PricesValue(FileValue):
         """Return a table, as text."""
         return "{R448A = [25, 30, 45]}"
 
+    def form(self) -> str:
+        """Return a table, as text."""
+        return self.sample()
+
     def read(self, value: object, p_ambient_Pa: float | None = None) -> tuple[tuple[str, Range], ...]:
         """Return the prices."""
         if not isinstance(value, Mapping):
@@ -73,7 +82,7 @@ class PricesValue(FileValue):
         for name, price in value.items():
             designation = designation_of(name)
             if designation in found:
-                raise QuantityError(f"{designation} is in the table twice; leave one out")
+                raise QuantityError(f"{with_hyphens(designation)} is in the table twice; leave one out")
             try:
                 found[designation] = self.price.read(price)
             except QuantityError as error:
@@ -121,10 +130,20 @@ class Option(Items):
     ] = key("leak_rate", "Share of the charge lost in a year with this option.", None)
     charge_kg: Annotated[
         float | None, Quantity("mass", "0 kg", "1000000 kg", "a plant that runs has one", above_low=True)
-    ] = key("charge", "Charge of the plant with this option.", None)
+    ] = key(
+        "charge",
+        "Charge of the plant with this option.",
+        None,
+        where="maker of the new plant, or an estimate by volume",
+    )
     largest_circuit_kg: Annotated[
         float | None, Quantity("mass", "0 kg", "1000000 kg", "a plant that runs has one", above_low=True)
-    ] = key("largest_circuit", "Charge of the largest circuit of a new plant: what one leak can release.", None)
+    ] = key(
+        "largest_circuit",
+        "Charge of the largest circuit of a new plant: what one leak can release.",
+        None,
+        where="maker of the new plant",
+    )
     seasonal_cop: Annotated[
         float | None, Number(0.2, 30, "seasonal figures of plants lie within it", example="3.1")
     ] = key("seasonal_cop", "Seasonal COP of a new plant, fans and pumps included, from its maker.", None)

@@ -2,12 +2,14 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Mapping
 from dataclasses import dataclass
 from typing import Any, NamedTuple
 
 from retrofit.case.values import FileValue, designation_of, outside
 from retrofit.errors import QuantityError
+from retrofit.refrigerants import with_hyphens
 from retrofit.units import described, listed, quoted
 
 LARGEST_NUMBER = 1e15
@@ -26,6 +28,10 @@ class Number(FileValue):
     def sample(self) -> str:
         """Return a number, as text."""
         return self.example
+
+    def form(self) -> str:
+        """Return a number, as text."""
+        return self.sample()
 
     def read(self, value: object, p_ambient_Pa: float | None = None) -> float | int:
         """Return the number."""
@@ -52,6 +58,10 @@ class OneOf(FileValue):
         """Return the last number, as text."""
         return str(self.numbers[-1])
 
+    def form(self) -> str:
+        """Return the numbers."""
+        return listed(map(str, self.numbers))
+
     def read(self, value: object, p_ambient_Pa: float | None = None) -> int:
         """Return the number."""
         found = _number(value, "a whole number", self.sample())
@@ -62,6 +72,28 @@ class OneOf(FileValue):
     def json_schema(self) -> dict[str, Any]:
         """Return the list of numbers."""
         return {"enum": list(self.numbers)}
+
+
+@dataclass(frozen=True)
+class Level(FileValue):
+    """Where a check begins to speak: a bare number, or a number with its unit, kept as text."""
+
+    number = Number(-1e9, 1e9, "thresholds lie within it", example="0.95")
+    quantity = r"\s*[+\u2212-]?[0-9.]+([eE][+-]?[0-9]+)?\s*[^\s0-9.][^\x00-\x1f\x7f]{0,39}"
+
+    def sample(self) -> str:
+        """Return a number, as text."""
+        return self.number.sample()
+
+    def read(self, value: object, p_ambient_Pa: float | None = None) -> float | str:
+        """Return the number, or the text; whether it needs a unit, and which, the checks know."""
+        if isinstance(value, str) and value.isprintable() and re.fullmatch(self.quantity, value):
+            return value
+        return self.number.read(value)
+
+    def json_schema(self) -> dict[str, Any]:
+        """Return a number, or a number with a unit."""
+        return {"anyOf": [self.number.json_schema(), {"type": "string", "pattern": r"^\s*[+-]?[0-9.]+.*[^0-9\s]"}]}
 
 
 class EfficiencyPoint(NamedTuple):
@@ -133,7 +165,7 @@ class FilmFactorValue(FileValue):
         for name, factor in value.items():
             designation = designation_of(name)
             if designation in found:
-                raise QuantityError(f"{designation} is in the table twice; leave one out")
+                raise QuantityError(f"{with_hyphens(designation)} is in the table twice; leave one out")
             found[designation] = self._of_one(name, factor)
         return FilmFactors(by_refrigerant=tuple(found.items()))
 

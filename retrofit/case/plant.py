@@ -9,7 +9,7 @@ from pydantic import Field
 
 from retrofit.case.numbers import Number
 from retrofit.case.table import Items, Table, WhyDefault, key
-from retrofit.case.values import PRESSURE_LIMIT, Choice, Quantity, Refrigerant
+from retrofit.case.values import NOTHING, PRESSURE_LIMIT, Absent, Choice, OrNone, Quantity, Refrigerant
 from retrofit.units import standard_atmosphere_Pa
 
 MOST_CANDIDATES = 40
@@ -48,15 +48,29 @@ class Plant(Table):
     refrigerant: Annotated[str, _REFRIGERANT] = key("refrigerant", "Refrigerant in the plant today.")
     charge_kg: Annotated[
         float | None, Quantity("mass", "0 kg", "1000000 kg", "a plant that runs has one", above_low=True)
-    ] = key("charge", "Mass of refrigerant in the whole plant.", None)
-    oil: Annotated[str | None, Choice(OILS, _OIL_SHORT)] = key("oil", "Kind of compressor oil.", None)
+    ] = key(
+        "charge",
+        "Mass of refrigerant in the whole plant.",
+        None,
+        where="log book, label on the plant, or weighed at recovery",
+    )
+    oil: Annotated[str | None, Choice(OILS, _OIL_SHORT)] = key(
+        "oil", "Kind of compressor oil.", None, where="compressor nameplate, service record, or a sample"
+    )
     oil_changes: Annotated[
         int | None, Number(0, 10, "a flush is repeated a few times at most", whole=True, example="2")
-    ] = key("oil_changes", "Oil changes planned before the new refrigerant goes in.", None)
+    ] = key(
+        "oil_changes", "Oil changes planned before the new refrigerant goes in.", None, where="plan of the changeover"
+    )
     oil_left: Annotated[
         float | None,
         Quantity("fraction", "0 %", "100 %", "some always stays", above_low=True, example="30 %"),
-    ] = key("oil_left", "Share of the old oil that each change leaves behind.", None)
+    ] = key(
+        "oil_left",
+        "Share of the old oil that each change leaves behind.",
+        None,
+        where="sample after a change, or the maker's experience",
+    )
     altitude_m: Annotated[
         float,
         Quantity("length", "-500 m", "6000 m", "plants stand within it"),
@@ -65,25 +79,53 @@ class Plant(Table):
     highest_ambient_K: Annotated[
         float | None,
         Quantity("temperature", "-20 degC", "80 degC", "air around plants lies within it", example="43 degC"),
-    ] = key("highest_ambient", "Hottest air around plant and vessels, also at standstill.", None)
+    ] = key(
+        "highest_ambient",
+        "Hottest air around plant and vessels, also at standstill.",
+        None,
+        where="hottest place beside plant and vessels in summer; design data of the site",
+    )
     high_side_limit_Pa: Annotated[float | None, PRESSURE_LIMIT] = key(
-        "high_side_limit", "Maximum pressure on the nameplate of the high side.", None
+        "high_side_limit",
+        "Maximum pressure on the nameplate of the high side.",
+        None,
+        where="nameplates of condenser, receiver and compressor: the lowest of them",
     )
     low_side_limit_Pa: Annotated[float | None, PRESSURE_LIMIT] = key(
-        "low_side_limit", "Maximum pressure on the nameplate of the low side.", None
+        "low_side_limit",
+        "Maximum pressure on the nameplate of the low side.",
+        None,
+        where="nameplates of evaporators, accumulators and crankcase: the lowest of them",
     )
-    relief_setting_Pa: Annotated[float | None, PRESSURE_LIMIT] = key(
-        "relief_setting", "Pressure at which the relief valve of the high side opens.", None
+    relief_setting_Pa: Annotated[float | Absent | None, OrNone(PRESSURE_LIMIT)] = key(
+        "relief_setting",
+        "Pressure at which the relief valve of the high side opens.",
+        None,
+        where="stamped on the relief valve, or its tag",
+    )
+    sight_glass: Annotated[str | None, Choice(("fitted", NOTHING))] = key(
+        "sight_glass", "Whether the liquid line has a sight glass.", None, where="liquid line, before the valves"
     )
     evaporator: Annotated[str | None, Choice(("direct expansion", "flooded", "pumped"))] = key(
-        "evaporator", "How the evaporators are fed.", None
+        "evaporator",
+        "How the evaporators are fed.",
+        None,
+        where="at the evaporators: expansion valve, float or level control, or pump",
     )
     metals: Annotated[
         Annotated[tuple[Annotated[str, _METAL], ...], Field(min_length=1, max_length=len(METALS))] | None,
         Items(_METAL, f'a list of 1 to {len(METALS)} metals, as in ["copper", "steel"]'),
-    ] = key("metals", "Metals that the refrigerant touches.", None)
+    ] = key(
+        "metals",
+        "Metals that the refrigerant touches.",
+        None,
+        where="pipes, coils, valves, bearings and instruments; parts lists",
+    )
     controller: Annotated[str | None, Choice(CONTROLLERS)] = key(
-        "controller", "Whether the refrigerant can be chosen in the software of controls and valves.", None
+        "controller",
+        "Whether the refrigerant can be chosen in the software of controls and valves.",
+        None,
+        where="menu of each controller of plant, cases and valves",
     )
 
     @property

@@ -10,12 +10,12 @@ from retrofit.case.compressor import CURRENT, PHASES, POWER_FACTOR, VOLTAGE
 from retrofit.case.dates import YesNo
 from retrofit.case.exchangers import FLOW, SPECIFIC_HEAT
 from retrofit.case.table import Items, Table, key
-from retrofit.case.values import PRESSURE_LIMIT, AbsolutePressure, Quantity, Text
+from retrofit.case.values import PRESSURE_LIMIT, Absent, AbsolutePressure, OrNone, Quantity, Text
 
 MOST_FAN_STEPS = 20
 _PRESSURE = Annotated[float | None, AbsolutePressure("0.01 bar a", "300 bar a", "gauges of plants lie within it")]
 _SETTING = AbsolutePressure("0.01 bar a", "300 bar a", "controls of plants lie within it")
-_SET = Annotated[float | None, _SETTING]
+_SET = Annotated[float | Absent | None, OrNone(_SETTING)]
 _TEMPERATURE = Annotated[
     float | None, Quantity("temperature", "-120 degC", "250 degC", "pipes of plants lie within it")
 ]
@@ -34,7 +34,12 @@ class Readings(Table):
     load: Annotated[
         float | None,
         Quantity("fraction", "0 %", "100 %", "a share of the full duty", above_low=True, example="80 %"),
-    ] = key("load", "Load during the readings, as a share of the full duty.", None)
+    ] = key(
+        "load",
+        "Load during the readings, as a share of the full duty.",
+        None,
+        where="capacity steps or speed during the readings",
+    )
     suction_pressure_Pa: _PRESSURE = key("suction_pressure", "Pressure at the compressor inlet.", None)
     discharge_pressure_Pa: _PRESSURE = key("discharge_pressure", "Pressure at the compressor outlet.", None)
     liquid_pressure_Pa: _PRESSURE = key("liquid_pressure", "Pressure in the liquid line.", None)
@@ -51,7 +56,9 @@ class Readings(Table):
     power_W: Annotated[
         float | None, Quantity("power", "0 W", "100 MW", "no single plant takes more", above_low=True, example="54 kW")
     ] = key("power", "Electrical power of the compressors.", None)
-    current_A: Annotated[float | None, CURRENT] = key("current", "Current of the compressors.", None)
+    current_A: Annotated[float | None, CURRENT] = key(
+        "current", "Current of the compressors.", None, where="clamp meter at full load, all compressors"
+    )
     voltage_V: Annotated[float | None, VOLTAGE] = key("voltage", "Voltage between phases, or of the one phase.", None)
     phases: Annotated[int | None, PHASES] = key("phases", "Phases of the supply, 1 or 3.", None)
     power_factor: Annotated[float | None, POWER_FACTOR] = key("power_factor", "Power factor of the motors.", None)
@@ -84,20 +91,54 @@ class Readings(Table):
 class Controls(Table):
     """Settings of the controls today; a gauge pressure is held as absolute."""
 
-    low_pressure_cut_out_Pa: _SET = key("low_pressure_cut_out", "Low-pressure switch stops the compressor.", None)
-    low_pressure_cut_in_Pa: _SET = key("low_pressure_cut_in", "Low-pressure switch lets it start again.", None)
-    high_pressure_cut_out_Pa: Annotated[float | None, PRESSURE_LIMIT] = key(
-        "high_pressure_cut_out", "High-pressure switch stops the compressor.", None
+    low_pressure_cut_out_Pa: _SET = key(
+        "low_pressure_cut_out",
+        "Pressure at which the low-pressure switch stops the compressor.",
+        None,
+        where="scale of the low-pressure switch, tried by an actual trip",
     )
-    rack_set_point_Pa: _SET = key("rack_set_point", "Suction pressure that the control of the rack holds.", None)
+    low_pressure_cut_in_Pa: _SET = key(
+        "low_pressure_cut_in",
+        "Pressure at which the low-pressure switch lets the compressor start again.",
+        None,
+        where="scale of the low-pressure switch",
+    )
+    high_pressure_cut_out_Pa: Annotated[float | Absent | None, OrNone(PRESSURE_LIMIT)] = key(
+        "high_pressure_cut_out",
+        "Pressure at which the high-pressure switch stops the compressor.",
+        None,
+        where="scale of the high-pressure switch, tried by an actual trip",
+    )
+    rack_set_point_Pa: _SET = key(
+        "rack_set_point",
+        "Suction pressure that the control of the rack holds.",
+        None,
+        where="menu of the rack controller",
+    )
     evaporator_regulator_Pa: _SET = key(
-        "evaporator_regulator", "Pressure that the evaporator pressure regulator holds.", None
+        "evaporator_regulator",
+        "Pressure that the evaporator pressure regulator holds.",
+        None,
+        where="gauge at the regulator",
     )
     crankcase_regulator_Pa: _SET = key(
-        "crankcase_regulator", "Highest suction pressure that the crankcase regulator lets through.", None
+        "crankcase_regulator",
+        "Highest suction pressure that the crankcase regulator lets through.",
+        None,
+        where="gauge at the regulator during pull-down",
     )
-    head_pressure_Pa: _SET = key("head_pressure", "Lowest condensing pressure that the control holds.", None)
+    head_pressure_Pa: _SET = key(
+        "head_pressure",
+        "Lowest condensing pressure that the control holds.",
+        None,
+        where="menu of the controller, or gauge in winter",
+    )
     fan_steps_Pa: Annotated[
-        Annotated[tuple[Annotated[float, _SETTING], ...], Field(min_length=1, max_length=MOST_FAN_STEPS)] | None,
-        Items(_SETTING, f'a list of 1 to {MOST_FAN_STEPS} pressures, as in ["12 bar g", "14 bar g"]'),
-    ] = key("fan_steps", "Pressures at which the condenser fans come on, rising.", None)
+        Annotated[tuple[Annotated[float, _SETTING], ...], Field(max_length=MOST_FAN_STEPS)] | None,
+        Items(_SETTING, f'a list of up to {MOST_FAN_STEPS} pressures, as in ["12 bar g", "14 bar g"]'),
+    ] = key(
+        "fan_steps",
+        "Pressures at which the condenser fans come on, rising.",
+        None,
+        where="menu of the controller, or the fan switches; [] if there are no steps",
+    )

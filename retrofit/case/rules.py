@@ -24,6 +24,7 @@ ORDERS = (
     Order("condenser.outlet", "above", "condenser.inlet", "a condenser warms air, water or brine"),
     Order("evaporator.inlet", "above", "duty.evaporating", _FLOW_OF_HEAT),
     Order("condenser.inlet", "below", "duty.condensing", _FLOW_OF_HEAT),
+    Order("condenser.highest_inlet", "at least", "condenser.inlet", "the highest is at least that of the duty"),
     Order("readings.evaporator_out", "below", "readings.evaporator_in", "an evaporator cools air, water or brine"),
     Order("readings.condenser_out", "above", "readings.condenser_in", "a condenser warms air, water or brine"),
     Order("readings.suction_pressure", "below", "readings.discharge_pressure", "a compressor raises the pressure"),

@@ -5,6 +5,7 @@ from __future__ import annotations
 from typing import Any
 
 from retrofit.case.model import CaseFile
+from retrofit.case.table import WHERE
 
 SCHEMA_FILE = "case.schema.json"
 
@@ -34,6 +35,9 @@ def _without_noise(node: Any) -> Any:
     noise = {"default"} if node.get("default", "") is None else set()
     if isinstance(node.get("title"), str):
         noise.add("title")
+    if isinstance(node.get(WHERE), str):
+        noise.add(WHERE)
+        node = {**node, "description": f"{node.get('description', '')} Read it: {node[WHERE]}.".strip()}
     clean = {key: _without_noise(value) for key, value in node.items() if key not in noise}
     return _without_null(clean)
 

@@ -39,13 +39,18 @@ class Items:
     how: str
 
 
-def key(alias: str, meaning: str, default: Any = ...) -> Any:
+WHERE = "where"
+
+
+def key(alias: str, meaning: str, default: Any = ..., *, where: str = "") -> Any:
     """Return the pydantic field of a key.
 
     Args:
         alias: The key in the file. [-]
         meaning: A sentence that an editor and the report show. [-]
         default: As a user would write it; None if the key may be left out and nothing is assumed. [-]
+        where: Where it is read on site, or who knows it; for the list of what is missing. [-]
     """
     checked = default is not None and default is not ...
-    return Field(default, alias=alias, description=meaning, validate_default=checked)
+    extra: dict[str, Any] | None = {WHERE: where} if where else None
+    return Field(default, alias=alias, description=meaning, validate_default=checked, json_schema_extra=extra)

@@ -22,7 +22,8 @@ refrigerant = "R404A"            # in the plant today, by its ASHRAE number
 # oil_left = "30 %"              # share of the old oil that each change leaves behind
 # high_side_limit = "28 bar g"   # maximum pressure on the nameplate of the high side
 # low_side_limit = "19 bar g"    # and of the low side
-# relief_setting = "28 bar g"    # stamped on the relief valve of the high side
+# relief_setting = "28 bar g"    # stamped on the relief valve of the high side; "none" if there is none
+# sight_glass = "fitted"         # in the liquid line; or none
 # altitude = "0 m"               # above sea level; it sets what a gauge counts from
 # highest_ambient = "38 degC"    # hottest air around plant and vessels, also at standstill
 # evaporator = "direct expansion"   # or flooded, or pumped
@@ -89,6 +90,7 @@ match = "mean"                   # refrigerants are compared at equal mean (or d
 #| flow = "10 kg/s"
 #| specific_heat = "1.006 kJ/(kg K)"
 # arrangement = "crossflow"
+# highest_inlet = "38 degC"      # while the plant runs; of water or brine nothing else says it
 # film_factor = 1.0
 # pressure_drop = "0.5 K"
 
@@ -143,14 +145,14 @@ match = "mean"                   # refrigerants are compared at equal mean (or d
 # roughness = "1.5 um"
 
 # [valve]
-# kind = "thermostatic"          # thermostatic, electronic or capillary
+# kind = "thermostatic"          # thermostatic, electronic, capillary or fixed orifice
 # liquid_line_loss = "0.3 bar"
 # distributor_loss = "1.5 bar"
 
 # [receiver]
-# volume = "120 l"
+# volume = "120 l"               # "none" if the plant has no receiver
 
-# [controls]                     # settings today
+# [controls]                     # settings today; "none" for a control that the plant does not have
 # low_pressure_cut_out = "1.0 bar g"
 # low_pressure_cut_in = "2.0 bar g"
 # high_pressure_cut_out = "25 bar g"
@@ -159,6 +161,19 @@ match = "mean"                   # refrigerants are compared at equal mean (or d
 # crankcase_regulator = "4.5 bar g"
 # head_pressure = "12 bar g"
 # fan_steps = ["12 bar g", "14 bar g"]
+
+# [approvals]                    # answers of makers and engineers in writing, by refrigerant
+# compressor = {{R448A = "approved", R452A = "not approved"}}   # with refrigerant and oil, in the maker's envelope
+# oil = {{R448A = "approved"}}
+# expansion_valve = {{R448A = "approved"}}
+# relief_capacity = {{R448A = "approved"}}   # flow by the standard with this refrigerant
+# receiver = {{R448A = "approved"}}
+# lines = {{R448A = "approved"}}   # by calculation
+# seals = {{R448A = "approved"}}
+# metals = {{R448A = "approved"}}
+# standstill = {{R448A = "approved"}}
+# room = {{R448A = "approved"}}   # by the authority, where the rules held here do not decide
+# law = {{R448A = "approved"}}   # by the authority, where the tables held here leave it open
 
 # [room]                         # the smallest occupied room that a leak can fill
 # name = "sales floor"
@@ -304,6 +319,7 @@ match = "mean"                   # refrigerants are compared at equal mean (or d
 
 # [thresholds]                   # your own, instead of those that the checks come with
 # capacity = {{work = 1.0, stop = 0.9}}
+# discharge_temperature = {{work = "105 degC", stop = "115 degC"}}
 """
 
 

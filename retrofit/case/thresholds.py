@@ -1,4 +1,4 @@
-"""The user's own thresholds of the checks; the checks know the names, this room does not."""
+"""The user's own thresholds of the checks; the checks know names and kinds of quantity, this room does not."""
 
 from __future__ import annotations
 
@@ -7,14 +7,14 @@ from typing import Annotated
 
 from pydantic import ConfigDict
 
-from retrofit.case.numbers import Number
+from retrofit.case.numbers import Level
 from retrofit.case.table import Table, key
 
-_LEVEL = Annotated[float | None, Number(-1e9, 1e9, "thresholds lie within it", example="0.95")]
+_LEVEL = Annotated[float | str | None, Level()]
 
 
 class Threshold(Table):
-    """The numbers from which one check speaks, by level."""
+    """Where one check begins to speak, by level: a number, or a quantity as text, which the checks read."""
 
     note: _LEVEL = key("note", "From here the check leaves a note.", None)
     work: _LEVEL = key("work", "From here the check asks for work.", None)

@@ -9,6 +9,7 @@ from __future__ import annotations
 import re
 import unicodedata
 from dataclasses import dataclass
+from enum import Enum
 from typing import Any
 
 from pydantic import GetCoreSchemaHandler, GetJsonSchemaHandler, ValidationInfo
@@ -28,6 +29,23 @@ from retrofit.units import (
     standard_atmosphere_Pa,
 )
 
+NOTHING = "none"
+
+
+class Absent(Enum):
+    """What a plant does not have, where a file says so: that is not the same as saying nothing."""
+
+    ABSENT = NOTHING
+
+
+ABSENT = Absent.ABSENT
+
+
+def present(value: float | Absent | None) -> float | None:
+    """Return a number; None if it is not given, or the plant does not have what it is of. [SI]"""
+    return None if isinstance(value, Absent) else value
+
+
 LONGEST_DESIGNATION = 40  # characters
 ROUNDING_PA = 0.01  # the same pressure written as gauge and as absolute may differ by that
 _DIRECTION_MARKS = "\u061c\u200e\u200f\u202a\u202b\u202c\u202d\u202e\u2066\u2067\u2068\u2069"
@@ -40,6 +58,10 @@ class FileValue:
     def sample(self) -> str:
         """Return a value as a user could write it, or nothing."""
         return ""
+
+    def form(self) -> str:
+        """Return how the value is written in a file, for a reader."""
+        return f'"{self.sample()}"' if self.sample() else "text in quotes"
 
     def shown_kind(self) -> str:
         """Return the kind of quantity to show the value as (a key of `UnitSystem.displays`), or nothing."""
@@ -92,6 +114,10 @@ class Quantity(FileValue):
         """Return a quantity of this kind, as text."""
         return self.example or KINDS[self.kind].example
 
+    def form(self) -> str:
+        """Return how the quantity is written: an example, and the units that there are."""
+        return f'"{self.sample()}" ({KINDS[self.kind].shown})'
+
     def shown_kind(self) -> str:
         """Return the kind of quantity to show the value as."""
         return self.shown or self.kind
@@ -127,6 +153,10 @@ class AbsolutePressure(FileValue):
     def sample(self) -> str:
         """Return a pressure, as text."""
         return KINDS["pressure"].example
+
+    def form(self) -> str:
+        """Return how the pressure is written: an example, and the units that there are."""
+        return f'"{self.sample()}" ({KINDS["pressure"].shown})'
 
     def shown_kind(self) -> str:
         """Return the kind of quantity to show the value as."""
@@ -169,6 +199,38 @@ PRESSURE_LIMIT = AbsolutePressure(
 
 
 @dataclass(frozen=True)
+class OrNone(FileValue):
+    """A value of something that a plant may not have: then the file says "none"."""
+
+    inner: FileValue
+
+    def sample(self) -> str:
+        """Return a value as a user could write it."""
+        return self.inner.sample()
+
+    def form(self) -> str:
+        """Return how the value is written, or that there is none."""
+        return f'{self.inner.form()}, or "{NOTHING}"'
+
+    def shown_kind(self) -> str:
+        """Return the kind of quantity to show the value as."""
+        return self.inner.shown_kind()
+
+    def read(self, value: object, p_ambient_Pa: float | None = None) -> Any:
+        """Return the value, or ABSENT."""
+        if isinstance(value, str) and value.strip().lower() == NOTHING:
+            return ABSENT
+        try:
+            return self.inner.read(value, p_ambient_Pa)
+        except QuantityError as error:
+            raise QuantityError(f'{error.message}; write "{NOTHING}" if the plant has none') from None
+
+    def json_schema(self) -> dict[str, Any]:
+        """Return the schema of the value, or the word."""
+        return {"anyOf": [self.inner.json_schema(), {"const": NOTHING}]}
+
+
+@dataclass(frozen=True)
 class Choice(FileValue):
     """One word, or a few, out of a closed list."""
 
@@ -178,6 +240,10 @@ class Choice(FileValue):
     def sample(self) -> str:
         """Return the first word."""
         return self.words[0]
+
+    def form(self) -> str:
+        """Return the words."""
+        return listed(f'"{word}"' for word in self.words)
 
     def read(self, value: object, p_ambient_Pa: float | None = None) -> str:
         """Return the word."""

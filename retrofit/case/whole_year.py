@@ -10,6 +10,7 @@ from retrofit.case.values import designation_of
 from retrofit.case.written import Written, path_of
 from retrofit.case.year import HOURS_OF_A_YEAR
 from retrofit.errors import QuantityError
+from retrofit.refrigerants import with_hyphens
 from retrofit.units import close_to, listed, quoted
 
 Complaints = Iterator[tuple[KeyPath, str]]
@@ -113,11 +114,11 @@ def problems_of_options(written: Written) -> Complaints:
             yield ("options", name), str(error)
             continue
         if known and None not in compared and designation not in known:
-            what = f"{designation} is neither in the plant nor a candidate{close_to(designation, known)}"
+            what = f"{with_hyphens(designation)} is neither in the plant nor a candidate{close_to(designation, known)}"
             yield ("options", name), f"{what}; add it to compare.candidates, or leave this out"
         elif designation in seen:
             yield (
                 ("options", name),
-                f"{designation} has options twice, here and as {quoted(seen[designation])}; keep one",
+                f"{with_hyphens(designation)} has options twice, here and as {quoted(seen[designation])}; keep one",
             )
         seen.setdefault(designation, name)

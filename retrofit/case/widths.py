@@ -17,7 +17,7 @@ from retrofit.case.numbers import Number
 from retrofit.case.plus_minus import widths_written
 from retrofit.case.positions import KeyPath
 from retrofit.case.rules import ORDERS, Order
-from retrofit.case.values import AbsolutePressure, FileValue, Quantity, designation_of
+from retrofit.case.values import AbsolutePressure, FileValue, OrNone, Quantity, designation_of
 from retrofit.case.written import Written
 from retrofit.errors import QuantityError
 from retrofit.units import close_to, parse_quantity, quoted, shown
@@ -131,7 +131,8 @@ def _kind_of(key: str) -> Quantity | Number | AbsolutePressure:
 
 def _how(key: str) -> FileValue | None:
     found = field_of(key)
-    return next((extra for extra in found[1].metadata if isinstance(extra, FileValue)), None) if found else None
+    how = next((extra for extra in found[1].metadata if isinstance(extra, FileValue)), None) if found else None
+    return how.inner if isinstance(how, OrNone) else how
 
 
 def _can_vary(how: FileValue | None) -> bool:

@@ -8,7 +8,7 @@ from typing import Any
 from retrofit.case.model import field_of
 from retrofit.case.positions import KeyPath
 from retrofit.case.table import Items
-from retrofit.case.values import FileValue
+from retrofit.case.values import ABSENT, FileValue
 from retrofit.errors import QuantityError
 from retrofit.units import STANDARD_ATMOSPHERE_PA, standard_atmosphere_Pa
 
@@ -67,6 +67,7 @@ class Written:
 
     def _read(self, how: FileValue, raw: object) -> Any:
         try:
-            return None if raw is None else how.read(raw, self.p_ambient_Pa)
+            found = None if raw is None else how.read(raw, self.p_ambient_Pa)
         except QuantityError:
             return None
+        return None if found is ABSENT else found

@@ -5,7 +5,7 @@ No check changes a number. A missing datum is a finding of level `unknown`, neve
 
 from retrofit.checks.advice import Advice, advice, deed
 from retrofit.checks.answer import Answer, Matter, answer
-from retrofit.checks.assess import LEVELS, assess, verdict
+from retrofit.checks.assess import LEVELS, assess, require_usable, verdict
 from retrofit.checks.limits import not_checked
 from retrofit.checks.thresholds import Threshold, threshold, thresholds_for
 
@@ -20,6 +20,7 @@ __all__ = [
     "assess",
     "deed",
     "not_checked",
+    "require_usable",
     "threshold",
     "thresholds_for",
     "verdict",

@@ -6,12 +6,14 @@ import datetime
 from collections.abc import Sequence
 from dataclasses import replace
 
-from retrofit.case import is_untouched
+from retrofit.case import Case, is_untouched
 from retrofit.checks.gates import GATES, GATES_OF_NEW_PLANT
 from retrofit.checks.hardware import hardware_findings, hardware_rows
 from retrofit.checks.law import law_findings, with_law
+from retrofit.checks.law.reader import tables_for
 from retrofit.checks.room import room_check, room_findings
 from retrofit.checks.thresholds import thresholds_for
+from retrofit.checks.ways_out import with_way_out
 from retrofit.study import Comparison, Entry, Finding, Level, Verdict
 
 LEVELS = tuple(Level)
@@ -70,6 +72,18 @@ def assess(comparison: Comparison, on: datetime.date | None = None) -> Compariso
     return replace(comparison, existing=existing, candidates=candidates)
 
 
+def require_usable(case: Case) -> None:
+    """Do nothing if `assess` can judge results of a case: its thresholds and the user's tables of law are right.
+
+    Args:
+        case: The case, as read.
+    Raises: CaseFileError as `assess` does, before anything is computed.
+    """
+    thresholds_for(case)
+    if case.law is not None and case.law.jurisdiction is not None:
+        tables_for(case.path)
+
+
 def _assessed(comparison: Comparison, entry: Entry) -> Entry:
     gates = GATES_OF_NEW_PLANT if entry.is_new_plant else GATES
     found = [finding for gate in gates for finding in gate(comparison, entry)]
@@ -82,6 +96,8 @@ def _assessed(comparison: Comparison, entry: Entry) -> Entry:
         found.insert(0, _not_computed(entry))
     if is_untouched(comparison.case.text):
         found.insert(0, PLACEHOLDERS)
+    entry = replace(entry, room=room)
+    found = [with_way_out(comparison, entry, finding) for finding in found]
     found.sort(key=_place)
     return replace(entry, findings=tuple(found), hardware=rows, room=room, verdict=verdict(found))
 

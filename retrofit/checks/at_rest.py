@@ -8,6 +8,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
+from retrofit.case import ABSENT
 from retrofit.checks.corners import conditions, worst
 from retrofit.checks.gauge import share_of_limit, share_text, times_below
 from retrofit.checks.thresholds import thresholds_for
@@ -16,6 +17,8 @@ from retrofit.units import quantity
 
 AMBIENT, LOW_SIDE, HIGH_SIDE = "plant.highest_ambient", "plant.low_side_limit", "plant.high_side_limit"
 RELIEF = "plant.relief_setting"
+NO_RELIEF = "The plant has no relief valve: whether its vessels need one with this refrigerant is to be proven."
+RELIEF_BY = "By the standard that applies: volume and pressure of each vessel, class and charge of the refrigerant."
 ABOVE_PLATE = 1e-6  # by how much a setting may pass a nameplate through rounding of units
 NOTHING_SHOWN = "Nothing shows that the plant holds it. Treat it as a new plant built for this refrigerant."
 
@@ -108,6 +111,10 @@ def relief(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
             (RELIEF,),
             margin.source,
         )
+        return
+    if plant.relief_setting_Pa is ABSENT:
+        if entry is not comparison.existing:
+            yield Finding("relief", Level.WORK, "No relief valve", NO_RELIEF, RELIEF_BY, margin.source)
         return
     setting, plate, facts = plant.relief_setting_Pa, plant.high_side_limit_Pa, []
     operating = worst(entry, "p_cond_Pa").value if conditions(entry) else None

@@ -11,7 +11,7 @@ from retrofit.checks.corners import Corner, worst
 from retrofit.checks.gauge import share_of_limit, share_text
 from retrofit.checks.thresholds import Threshold, thresholds_for
 from retrofit.study import AtRest, Comparison, Entry, Finding, Level
-from retrofit.study.hardware.conditions import hottest_day_keys, hottest_inlet_K
+from retrofit.study.hardware.conditions import hottest_day_keys
 from retrofit.units import quantity
 
 
@@ -136,16 +136,14 @@ def hottest_day(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
     if numbers is None or numbers.new.hottest is not None:
         return
     keys, source = hottest_day_keys(comparison.case), limit_of(comparison, "high_side").source
-    is_water = not keys and hottest_inlet_K(comparison.case) is None
-    if not keys and not is_water and numbers.old.hottest is None:
+    if not keys and numbers.old.hottest is None:
         return  # today's plant does not run on such a day either: the temperature holds at rest only
     fact = "The condensing pressure on the hottest day is not known."
     if keys:
         advice = f"Give {', '.join(f'`{key}`' for key in keys)}."
-    elif is_water:
-        advice = "Give the highest temperature of the water at the condenser."
     else:
-        advice = f"{numbers.new.missing['hottest'].capitalize()}."
+        gap = numbers.new.missing["hottest"]
+        advice, keys = f"{gap.words[:1].upper()}{gap.words[1:]}.", gap.keys
     yield Finding("hottest-day", Level.UNKNOWN, "Hottest day not computed", fact, advice, source, keys, decisive=True)
 
 

@@ -18,6 +18,7 @@ from retrofit.checks.money_words import (
     years_text,
 )
 from retrofit.checks.prospects import (
+    DEEDS,
     FAR_FROM_METER,
     KEPT,
     NO_MONEY,
@@ -38,10 +39,10 @@ from retrofit.checks.prospects import (
     prospects,
     ranked,
 )
-from retrofit.study import Comparison
+from retrofit.study import Comparison, Level
 from retrofit.study.bands import model_band
 from retrofit.study.emissions import Tewi
-from retrofit.study.life import Swing
+from retrofit.study.life import CAPACITY, Swing
 from retrofit.study.money import Payback, PaybackState, abatement_of
 from retrofit.study.ranking import stability_words
 from retrofit.study.sums import ComparisonState
@@ -285,12 +286,27 @@ def _unmet(options: tuple[Prospect, ...], units: UnitSystem) -> Matter:
             continue
         if option.year.unmet_h > 0.0:
             hours, energy = format_number(option.year.unmet_h, 0), energy_text(units, option.year.unmet_J)
-            lacks.append(f"{option.name} {hours}{NBSP}h, {energy}")
+            beside = capacity_words(option)
+            lacks.append(f"{option.name} {hours}{NBSP}h, {energy}" + (f" ({beside})" if beside else ""))
         else:
             meets.append(option.name)
     words = "some of it unmet, so that part of a lower electricity is load not met"
     found = tuple((text, tuple(names)) for text, names in (("met in every hour", meets), (words, lacks)) if names)
     return Matter("Load of the year", found if lacks else ())
+
+
+def capacity_words(option: Prospect) -> str:
+    """Return what the checks say of an option's capacity at the design point, beside its unmet load of a year.
+
+    Args:
+        option: The option.
+    Returns: The words; empty where they say nothing.
+    """
+    found = next((item for item in option.entry.findings if item.code == CAPACITY), None)
+    if found is None or option.deed == DEEDS["replace"]:
+        return ""
+    verdict = "stopped for it" if found.level == Level.STOP else "to be modified for it"
+    return f"at the design point too it delivers less than needed, and is {verdict}"
 
 
 def meter_words(comparison: Comparison, units: UnitSystem) -> str:

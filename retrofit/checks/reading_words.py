@@ -211,9 +211,16 @@ def calibration_words(comparison: Comparison) -> tuple[str, ...]:
         return (
             f"Calibrated: {_powers(found)}, {found.ratio:.2f} times as much. Motor and drive together count as "
             f"{found.efficiency:.1%} efficient, alike for every option: electrical power, energy, emissions and money "
-            "are made with that. COP against today is unaffected.",
+            f"are made with that. COP against today is unaffected.{_kept_by_makers(comparison)}",
         )
     return (f"Not calibrated, though the case asks for it: {_why_not_calibrated(found)}.",)
+
+
+def _kept_by_makers(comparison: Comparison) -> str:
+    """Say whose year keeps the seasonal COP of its maker, which has the losses of its own motors in it."""
+    options = comparison.case.options.by_refrigerant if comparison.case.options else {}
+    names = [name for name, option in options.items() if option.seasonal_cop is not None]
+    return f" A new plant for {listed(names, 'and')} keeps the seasonal COP of its maker." if names else ""
 
 
 def _powers(found: Calibration) -> str:

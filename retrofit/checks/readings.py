@@ -78,7 +78,7 @@ class Held:
 class Duty(StrEnum):
     """How the duty of the case lies to what today's plant gives."""
 
-    WITHIN = "within what the plant can be"
+    WITHIN = "within what the plant can give"
     ABOVE = "more than the plant gives"
     BELOW = "less than the plant gives"
     NO_SWEPT_VOLUME = "swept volume not given"

@@ -11,8 +11,8 @@ from importlib.resources import files
 from retrofit.case import Case
 from retrofit.case import Threshold as OwnThreshold
 from retrofit.case.source import parsed
-from retrofit.errors import CaseFileError, Problem
-from retrofit.units import SI, close_to, figure, listed, quantity, quoted, told, unit_word
+from retrofit.errors import CaseFileError, Problem, QuantityError
+from retrofit.units import SI, close_to, figure, listed, parse_quantity, quantity, quoted, told, unit_word
 
 LEVELS = ("note", "work", "stop")
 
@@ -64,6 +64,31 @@ class Threshold:
         """Return the level of a value in SI that is worse the larger it is. [SI]"""
         return self.level(self.number(value))
 
+    def read(self, level: str, written: float | str) -> float:
+        """Return a figure that the case sets, in the unit of the figures here.
+
+        Args:
+            level: The level it is for.
+            written: A bare number, or a quantity as text.
+        Raises: QuantityError if a figure with a unit is written without, or the other way round.
+        """
+        if not self.kind:
+            if isinstance(written, str):
+                raise QuantityError(
+                    f"{level} {quoted(written)} has a unit, and this threshold has none ({self.unit}); write {level} = "
+                    f"{self.figures[level]:g}"
+                )
+            return written
+        unit = self.unit.split(" ", 1)[0]
+        if not isinstance(written, str):
+            raise QuantityError(
+                f'{level} {written:g} has no unit; write it with one, as in {level} = "{self.figures[level]:g} {unit}"'
+            )
+        try:
+            return self.number(parse_quantity(written, self.kind))
+        except QuantityError as error:
+            raise QuantityError(f"{level}: {error.message}") from None
+
     def _SI(self, figure: float) -> float:
         return float(SI.displays[self.kind].unit.to_SI(figure))
 
@@ -113,7 +138,8 @@ def thresholds_for(case: Case) -> Mapping[str, Threshold]:
 
     Args:
         case: The case.
-    Raises: CaseFileError for a name or a level that there is not, or figures in the wrong order.
+    Raises: CaseFileError for a name or a level that there is not, a figure without its unit, or figures in the
+        wrong order.
     """
     table = {name: threshold(name) for name in _table()}
     own = case.thresholds.by_name if case.thresholds else {}
@@ -131,19 +157,29 @@ def _problems(name: str, own: OwnThreshold, table: Mapping[str, Threshold]) -> I
         near = close_to(name, table) or "."
         yield name, f"there is no threshold {quoted(name)}{near} The names are {listed(table, 'and')}"
         return
-    known, given = table[name].figures, _given(own)
-    unknown = [level for level in given if level not in known]
+    known, written = table[name].figures, _written(own)
+    unknown = [level for level in written if level not in known]
     if unknown:
         yield name, f"it has no level {listed(unknown)}; its levels are {listed(known, 'and')}"
+        return
+    try:
+        given = _given(table[name], own)
+    except QuantityError as error:
+        yield name, error.message
         return
     if not _in_order(known, {**known, **given}):
         words = told(table[name].words("beyond"), SI)
         yield name, f"its figures run the other way than {words}; give all levels in that order"
 
 
-def _given(own: OwnThreshold) -> Mapping[str, float]:
+def _written(own: OwnThreshold) -> Mapping[str, float | str]:
     found = {level: getattr(own, level) for level in LEVELS}
     return {level: figure for level, figure in found.items() if figure is not None}
+
+
+def _given(limit: Threshold, own: OwnThreshold) -> Mapping[str, float]:
+    """Return the figures of the user's, in the unit of the threshold."""
+    return {level: limit.read(level, figure) for level, figure in _written(own).items()}
 
 
 def _in_order(known: Mapping[str, float], laid_over: Mapping[str, float]) -> bool:
@@ -153,7 +189,7 @@ def _in_order(known: Mapping[str, float], laid_over: Mapping[str, float]) -> boo
 
 
 def _laid_over(limit: Threshold, own: OwnThreshold) -> Threshold:
-    given = _given(own)
+    given = _given(limit, own)
     instead = ", ".join(f"{level} {limit.figures[level]:g}" for level in given)
     source = f"set in the case, instead of {instead} ({limit.source})"
     figures = {**limit.figures, **given}

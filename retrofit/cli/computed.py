@@ -39,11 +39,16 @@ def assessed(case: Case, on: datetime | None) -> Comparison:
     return assess(compare_case(case, say_build), on.date() if on else None)
 
 
-def with_life_if_asked(comparison: Comparison) -> Comparison:
-    """Return a result with the remaining life if its case asks for any of it."""
+def with_life_if_asked(comparison: Comparison, *, in_short: bool = False) -> Comparison:
+    """Return a result with the remaining life if its case asks for any of it.
+
+    Args:
+        comparison: An assessed result.
+        in_short: Whether like hours are taken together and nothing is drawn, to see what can be told at all.
+    """
     case = comparison.case
     if case.year is None and case.emissions is None and case.money is None:
         return comparison
-    from retrofit.study.life import with_life
+    from retrofit.study.life import life_of, lived, with_life
 
-    return with_life(comparison)
+    return lived(comparison, life_of(comparison, 0, hourly=False)) if in_short else with_life(comparison)

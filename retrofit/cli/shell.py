@@ -59,9 +59,10 @@ def fail(message: str, status: int) -> NoReturn:
         message: What is wrong and what to do next. [-]
         status: Status to end with. [-]
     """
+    from retrofit.refrigerants import with_hyphens
     from retrofit.units import shown
 
-    click.echo(f"retrofit: {shown(message, 2000)}", err=True)
+    click.echo(f"retrofit: {with_hyphens(shown(message, 2000))}", err=True)
     sys.exit(status)
 
 
@@ -95,8 +96,10 @@ def strong() -> Callable[[str], str]:
 
 def say_build(designation: str) -> None:
     """Say what takes a second, and load the library for it; its loading ends in a crash if it is interrupted."""
+    from retrofit.refrigerants import with_hyphens
+
     with _interrupts_held():
-        click.echo(f"Building the property tables of {designation}, once for this version…", err=True)
+        click.echo(f"Building the property tables of {with_hyphens(designation)}, once for this version…", err=True)
         importlib.import_module("CoolProp.CoolProp")
 
 

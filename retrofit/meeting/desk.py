@@ -8,7 +8,7 @@ import threading
 import time
 from collections import OrderedDict
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass, field, replace
+from dataclasses import dataclass, field
 from typing import Any
 
 from retrofit.case import Case, as_text, case_from_data, laid_over
@@ -213,10 +213,10 @@ def _with_life(found: Comparison, give_way: Callable[[], None]) -> Comparison | 
         give_way: Called between the options, to end the work where something newer is asked for.
     Returns: Nothing if it cannot be worked out.
     """
-    from retrofit.study.life import life_of
+    from retrofit.study.life import life_of, lived
 
     try:
-        return replace(found, life=life_of(found, draws=0, hourly=False, before_each=give_way))
+        return lived(found, life_of(found, draws=0, hourly=False, before_each=give_way))
     except RetrofitError:
         return None
     except Exception:

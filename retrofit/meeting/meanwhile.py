@@ -10,6 +10,7 @@ from retrofit.meeting.inputs import GROUPS, LABELS
 from retrofit.meeting.state import State
 from retrofit.meeting.weighing import USUAL
 
+FLAGS = ("in the comparison", "hidden", "pinned")
 Item = tuple[str, str]  # kind, and which of that kind
 # Labels as a sentence needs them: with their group where another group has the same.
 _LABELS = {
@@ -36,10 +37,10 @@ class Changed:
     @property
     def told(self) -> str:
         """Return what it is now, in words."""
-        return _told(self.now)
+        return _told(self.now, self.item[0])
 
     def __str__(self) -> str:
-        return f"{_called(self.item)}: changed to {_told(self.now)} (was {_told(self.was)})"
+        return f"{_called(self.item)}: changed to {self.told} (was {_told(self.was, self.item[0])})"
 
 
 def items_of(state: State, source: Source) -> dict[Item, str]:
@@ -92,5 +93,7 @@ def _called(item: Item) -> str:
     return f"{name} {kind}".strip()
 
 
-def _told(text: str) -> str:
-    return f'"{text}"' if " " in text and len(text) > 30 else text or "nothing"
+def _told(text: str, kind: str) -> str:
+    if not text:
+        return "no" if kind in FLAGS else "nothing"
+    return f'"{text}"' if kind == "note" else text

@@ -131,7 +131,7 @@ class Session:
         found: dict[str, Refused] = {}
         for asked in changed(before, after, self.source):
             if known := others.get(asked.item):
-                said = f"{known} by another window meanwhile, so {asked.told} was not taken; if it shall be, ask again"
+                said = f"{known} by another window meanwhile; to have {asked.told} all the same, ask again"
                 so_far = f"{found[known.field].why}; " if known.field in found else ""
                 found[known.field] = Refused(known.now, so_far + said)
         return found

@@ -9,6 +9,7 @@ from retrofit.refrigerants.cautions import Caution, cautions_for, change_caution
 from retrofit.refrigerants.limits import kg_per_m3_to_vol_pct, ppm_to_kg_per_m3
 from retrofit.refrigerants.records import STATUSES, Dispute, Refrigerant, Source, Value
 from retrofit.refrigerants.safety import SafetyClass, is_flammable, parse_safety_class
+from retrofit.refrigerants.spelling import with_hyphens
 
 __all__ = [
     "GWP_BASES",
@@ -28,4 +29,5 @@ __all__ = [
     "parse_safety_class",
     "ppm_to_kg_per_m3",
     "source",
+    "with_hyphens",
 ]

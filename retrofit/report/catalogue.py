@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Callable, Iterable, Sequence
 from typing import Any
 
-from retrofit.refrigerants import GWP_BASES, Refrigerant, Value, cautions_for, source
+from retrofit.refrigerants import GWP_BASES, Refrigerant, Value, cautions_for, source, with_hyphens
 from retrofit.report.text_table import Column, paragraph, text_table
 from retrofit.units import ZERO_C_K
 
@@ -173,7 +173,8 @@ def refrigerant_text(item: Refrigerant, columns: int, strong: Callable[[str], st
         columns: Width to wrap prose to. [characters]
         strong: How a heading is set off.
     """
-    title = strong("  ".join(part for part in (item.designation, item.chemical_name or _composition(item)) if part))
+    what = item.chemical_name or with_hyphens(_composition(item))
+    title = strong("  ".join(part for part in (item.display_name, what) if part))
     cautions = [
         paragraph(f"{caution.level.upper()}  {caution.title}. {caution.text}", columns, indent="  ", first="")
         for caution in cautions_for(item)

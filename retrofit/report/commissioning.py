@@ -6,18 +6,21 @@ import math
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass, replace
 
+from retrofit.case import FIXED, present
+from retrofit.case.values import NOTHING
 from retrofit.checks.operating import discharge_limit, limit_of
 from retrofit.checks.reading_words import expected_words
+from retrofit.equipment.vessels import co2_equivalent_t
 from retrofit.refrigerants import GWP_BASES, is_flammable
 from retrofit.report.agreeing import calibration_text
 from retrofit.report.jobcard import UNKNOWN, Job, span
 from retrofit.report.judging import spelled
 from retrofit.report.values import potential_text
 from retrofit.study.bands import QUANTITIES, bands_of
-from retrofit.study.changeover import Expected, PressureRow, Window, operating_span, pressure_rows
+from retrofit.study.changeover import DRAWS, Expected, PressureRow, Window, operating_span, pressure_rows
 from retrofit.study.hardware.settings import SET_POINTS
 from retrofit.study.practice import practice
-from retrofit.units import MISSING, ZERO_C_K, told
+from retrofit.units import MISSING, ZERO_C_K, listed, told
 
 MOST_ROWS, COLUMNS = 96, 4  # rows of the pressure-temperature table, and how many parts stand side by side
 STEPS = {"si": (1.0, 2.0, 5.0), "ip": (2.0, 4.0, 10.0)}  # in the reader's degrees
@@ -193,11 +196,14 @@ def _targets(job: Job) -> tuple[Target, ...]:
     at_bulb = _range(job, "superheat_bulb")
     if case.plant.evaporator in ("flooded", "pumped"):
         at_bulb = f"none: {case.plant.evaporator} evaporator, hold its level"
-    elif case.valve and case.valve.kind == "capillary":
-        at_bulb = "follows from the charge: capillary tube"
-    cooling = ["subcooling_receiver"] if case.receiver else ["subcooling_receiver", "subcooling_critical"]
-    words = [_range(job, name) + (" without a receiver" if name == "subcooling_critical" else "") for name in cooling]
-    subcooling = f"{words[0]} with a receiver, sight glass clear" + "".join(f"; {more}" for more in words[1:])
+    elif case.valve and case.valve.kind in FIXED:
+        at_bulb = f"follows from the charge: {case.valve.kind}"
+    glass = "" if case.plant.sight_glass == NOTHING else ", sight glass clear"
+    with_receiver = f"{_range(job, 'subcooling_receiver')} with a receiver{glass}"
+    without = f"{_range(job, 'subcooling_critical')} without a receiver"
+    subcooling = f"{with_receiver}; {without}"
+    if case.receiver is not None:
+        subcooling = with_receiver if case.receiver.is_there else without
     return (
         Target("Superheat, evaporator outlet, from dew", at_bulb, taken[0]),
         Target("Superheat, compressor inlet, from dew", f"{_range(job, 'superheat_compressor')} at least", taken[1]),
@@ -212,9 +218,11 @@ def _targets(job: Job) -> tuple[Target, ...]:
 
 def _discharge(job: Job) -> str:
     numbers = job.entry.hardware_numbers
-    return (
-        MISSING if numbers is None else job.units.with_unit("temperature", numbers.new.design.T_discharge_K, decimals=0)
-    )
+    if numbers is None:
+        return MISSING
+    T_K = numbers.new.design.T_discharge_K
+    past = ", above the limit" if T_K > _discharge_stop_K(job) else ""
+    return f"{job.units.with_unit('temperature', T_K, decimals=0)}{past}"
 
 
 def _windows(job: Job) -> Windows:
@@ -229,7 +237,7 @@ def _windows(job: Job) -> Windows:
     kinds: tuple[tuple[str, str, str, Callable[[Window], str]], ...] = (
         ("Suction (evaporating)", "gauge pressure", "p_evap_Pa", lambda w: gauge(w, None)),
         ("Discharge (condensing)", "gauge pressure", "p_cond_Pa", lambda w: gauge(w, 1)),
-        ("Discharge line", "temperature", "T_discharge_K", lambda w: _shown(job, "temperature", w, 0)),
+        ("Discharge line", "temperature", "T_discharge_K", lambda w: _below_limit(job, w)),
         ("Current", "current", "current_A", lambda w: _shown(job, "current", w, _decimals(w))),
         ("Electrical power", "power", "power_W", lambda w: _shown(job, "power", w, _decimals(w, 1000.0))),
     )
@@ -251,6 +259,41 @@ def _shown(job: Job, kind: str, window: Window, decimals: int | None) -> str:
     return _ends(window, lambda value: job.units.text(kind, value, decimals=decimals))
 
 
+def _discharge_stop_K(job: Job) -> float:
+    """Return the discharge temperature that is never passed. [K]"""
+    return (limit_of(job.comparison, discharge_limit(job.comparison)).stop or math.inf) + ZERO_C_K
+
+
+def _below_limit(job: Job, window: Window) -> str:
+    """Return what the discharge line may show: the limit goes before what is expected."""
+    stop = _discharge_stop_K(job)
+    if window.high <= stop:
+        return _shown(job, "temperature", window, 0)
+    limit = job.units.text("temperature", stop, decimals=0)
+    if window.low >= stop:
+        return f"above the limit, {limit}"
+    return f"{span(job.units.text('temperature', window.low, decimals=0), limit)}, the limit"
+
+
+def _limit_note(job: Job, expected: Sequence[Expected]) -> str:
+    """Return at which inlets the discharge line may pass its limit, and that the limit holds; empty if at none."""
+    stop = _discharge_stop_K(job)
+    passing = [item for item in expected if item.T_discharge_K is not None and item.T_discharge_K.high > stop]
+    if not passing:
+        return ""
+    highest = max(item.T_discharge_K.high for item in passing if item.T_discharge_K is not None)
+    limit, reached = (job.units.with_unit("temperature", T_K, decimals=0) for T_K in (stop, highest))
+    return (
+        f"The limit of the discharge line, {limit}, goes before the window: at {listed(_at(passing), 'and')} up to "
+        f"{reached} is calculated. Do not run at full there until the discharge is kept below {limit}: settle "
+        "head cooling, injection or less lift with the compressor's maker first. Shut down at the limit."
+    )
+
+
+def _at(expected: Sequence[Expected]) -> list[str]:
+    return [f"the {INLETS[item.name]} inlet" if item.name != "today" else "the inlet of the day" for item in expected]
+
+
 def _decimals(window: Window, unit: float = 1.0) -> int:
     """Return decimals that do not pretend more than the band allows."""
     return 0 if window.low / unit >= FEW_DIGITS else 1 if window.low / unit >= FEWER_DIGITS else 2
@@ -264,8 +307,10 @@ def _window_notes(job: Job, expected: Sequence[Expected]) -> tuple[str, ...]:
     band, numbers = bands_of(job.entry), job.entry.hardware_numbers
     discharge = job.units.with_unit("temperature difference", band["T_discharge"].value, decimals=0)
     notes = [
+        _limit_note(job, expected),
         spelled(
-            "Existing compressor and exchangers balanced at full load; as wide as the band of the model: pressure "
+            f"Existing compressor and exchangers balanced at full load. A window holds the 10th to 90th percentile of "
+            f"{DRAWS} samples of the inputs within their limits, and the band of the model: pressure "
             f"±{band['pressure'].value:.0%}, discharge ±{discharge}, power and current "
             f"±{band[QUANTITIES['power'][0]].value:.0%}."
         ),
@@ -276,10 +321,11 @@ def _window_notes(job: Job, expected: Sequence[Expected]) -> tuple[str, ...]:
         notes.append(f"Held up by the control of head pressure: {', '.join(held)}.")
     notes += [f"{INLETS[item.name].capitalize()}: {spelled(item.reason)}." for item in expected if item.reason]
     if numbers is not None and numbers.missing.get("current"):
-        notes.append(f"Current not computed: {spelled(numbers.missing['current'])}.")
+        notes.append(f"Current not computed: {spelled(numbers.missing['current'].words)}.")
     if calibrated := calibration_text(job.comparison, job.units):
         notes.append(spelled(calibrated))
-    return (*notes, *(spelled(told(text, job.units)) for text in expected_words(job.comparison)))
+    notes += [spelled(told(text, job.units)) for text in expected_words(job.comparison)]
+    return tuple(note for note in notes if note)
 
 
 # -- the pressure-temperature table ------------------------------------------------------------------
@@ -344,7 +390,7 @@ def _changes(job: Job) -> tuple[Change, ...]:
     found += [Change(name, "", "", held) for key, name, held in SET_POINTS if key not in known]
     if "fan_steps" not in known:
         found.append(Change("Condenser fans, steps", "", "", "mean condensing"))
-    cut_out = controls.high_pressure_cut_out_Pa if controls else None
+    cut_out = present(controls.high_pressure_cut_out_Pa) if controls else None
     return (Change("High-pressure switch, cut-out", _bare(job, cut_out), "", "stays with the vessel"), *found)
 
 
@@ -357,7 +403,7 @@ def _charge(job: Job) -> tuple[tuple[str, str], ...]:
     filling = numbers.filling if numbers else None
     ends = [f"{end:.0%}" for end in practice("first_charge").ends]
     if filling is None or first is None:
-        why = numbers.missing.get("filling", "") if numbers else ""
+        why = numbers.missing["filling"].words if numbers else ""
         return (("Expected", UNKNOWN + (f" ({why})" if why else "")), (spelled(f"First, {span(*ends)}"), UNKNOWN))
     mass = job.units.column("mass", [filling.expected_kg, filling.lowest_kg, filling.highest_kg, *first])
     label = job.units.label("mass")
@@ -375,9 +421,13 @@ def _label(job: Job) -> tuple[str, ...]:
             lines.append(f"GWP not stated ({GWP_BASES[weight.basis]}).")
             continue
         expected = "" if weight.co2e_t is None else f" ({weight.co2e_t:.1f} t with the charge expected)"
+        unit, each_t = (
+            job.units.label("mass"),
+            float(co2_equivalent_t(job.units.displays["mass"].unit.to_SI(1.0), weight.gwp)),
+        )
         lines.append(
-            f"GWP {potential_text(weight.gwp)} ({GWP_BASES[weight.basis]}). CO2 equivalent: kg charged × "
-            f"{weight.gwp / 1000.0:.3f} = ________ t{expected}."
+            f"GWP {potential_text(weight.gwp)} ({GWP_BASES[weight.basis]}). CO2 equivalent: {unit} charged × "
+            f"{each_t:.4g} = ________ t{expected}."
         )
     if is_flammable(refrigerant.safety_class.text) is not False:
         lines.append("Warning sign for flammable gas, by the standard that applies.")

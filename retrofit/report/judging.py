@@ -6,7 +6,7 @@ import re
 from collections.abc import Mapping
 from dataclasses import dataclass
 
-from retrofit.refrigerants import source
+from retrofit.refrigerants import source, with_hyphens
 from retrofit.study import Comparison, Entry, Family, Finding, Level, Verdict
 from retrofit.units import listed
 
@@ -70,8 +70,8 @@ class Shared:
 
 
 def spelled(text: str) -> str:
-    """Return a text as readers know it: designations with a hyphen but in keys, and a blank before the percent sign."""
-    return re.sub(r"(?<=[0-9])%", "\N{NO-BREAK SPACE}%", re.sub(r"(?<!\.)\bR(?=[0-9])", "R-", text))
+    """Return a text as readers know it: designations with a hyphen, and a blank before the percent sign."""
+    return re.sub(r"(?<=[0-9])%", "\N{NO-BREAK SPACE}%", with_hyphens(text))
 
 
 def judged(comparison: Comparison) -> tuple[tuple[Judged, ...], tuple[Shared, ...]]:

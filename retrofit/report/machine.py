@@ -9,6 +9,7 @@ from collections.abc import Mapping
 from dataclasses import asdict, fields
 from typing import Any
 
+from retrofit.checks.survey import OpenKey, survey
 from retrofit.properties import Grade
 from retrofit.refrigerants import GWP_BASES, Refrigerant
 from retrofit.report.machine_agreement import agreement_json
@@ -62,11 +63,18 @@ def comparison_json(comparison: Comparison) -> dict[str, Any]:
         "existing": _entry(comparison.existing),
         "candidates": [_entry(entry) for entry in comparison.candidates],
         "defaults": [asdict(default) for default in case.defaults],
+        "open": [_open(item) for item in survey(comparison)],
         "baseline": _baseline(comparison.baseline),
         **agreement_json(comparison),
         "law": _law_basis(comparison.law),
     }
     return all_told(found, SI)
+
+
+def _open(item: OpenKey) -> dict[str, Any]:
+    """Return a key that is missing: what it is, where it is read, how it is written, and what it settles."""
+    settles = [{"part": u.part, "refrigerant": u.refrigerant, "code": u.code} for u in item.settles]
+    return {**asdict(item.facts), "decisive": item.decisive, "components": item.components, "settles": settles}
 
 
 def _baseline(found: Baseline | None) -> dict[str, Any] | None:

@@ -37,17 +37,13 @@ def agreement_json(comparison: Comparison) -> dict[str, Any]:
             "limits": list(duty.limits),
             "text": told(duty_words(comparison), SI) or None,
         },
-        "calibration": calibration_json(comparison),
+        "calibration": _calibration(comparison),
         "contradictions": list(contradiction_words(comparison, SI)),
     }
 
 
-def calibration_json(comparison: Comparison) -> dict[str, Any] | None:
-    """Return the losses taken from the power read, or why they are not; None if the case does not ask for them.
-
-    Args:
-        comparison: A result.
-    """
+def _calibration(comparison: Comparison) -> dict[str, Any] | None:
+    """Return the losses taken from the power read, or why they are not; None if the case does not ask for them."""
     found = comparison.calibration
     if found is None:
         return None

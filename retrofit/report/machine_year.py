@@ -24,7 +24,7 @@ from retrofit.checks.prospects import (
     ranked,
 )
 from retrofit.report.emissions import check_months
-from retrofit.report.machine_agreement import calibration_json
+from retrofit.report.machine_agreement import agreement_json
 from retrofit.study import Comparison, Entry
 from retrofit.study.first_cost import FirstCost
 from retrofit.study.life import Certainty, Swing
@@ -78,7 +78,7 @@ def year_json(comparison: Comparison) -> dict[str, Any]:
             "signs": "a saving and a net present value are above 0 where the option saves money",
         },
         "asked": _asked(comparison),
-        "calibration": calibration_json(comparison),
+        **agreement_json(comparison),
         "draws": {"number": life.draws, "seed": life.seed, "method": "Latin hypercube, inputs independent"},
         "inputs": [_input(item) for item in life.inputs],
         "options": [_option(comparison, options[0], option) for option in options],

@@ -26,6 +26,7 @@ from retrofit.report.inputs import Input, LeftOut, Taken, defaults, fixed, input
 from retrofit.report.judging import Judged, Shared, judged, spelled, threshold_sources
 from retrofit.report.law import LawPart, law_part
 from retrofit.report.life import LifePart, life_part
+from retrofit.report.open_list import OpenRow, open_rows
 from retrofit.report.plain import css_string, plain
 from retrofit.report.plant import WHY_SAME_COOLING, has_plant
 from retrofit.report.practice import Method, jobs, method
@@ -117,6 +118,7 @@ class Page:
     inputs: tuple[Input, ...]
     defaults: tuple[Taken, ...]
     missing: tuple[LeftOut, ...]
+    open: tuple[OpenRow, ...]
     fixed: tuple[str, ...]
     grades: tuple[Graded, ...]
     difference_unit: str
@@ -187,6 +189,7 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
         inputs=inputs(case, units),
         defaults=defaults(case, units),
         missing=missing(case),
+        open=open_rows(comparison),
         fixed=fixed(comparison),
         grades=tuple(_graded(entry, units) for entry in comparison.entries),
         difference_unit=units.label("temperature difference"),

@@ -291,17 +291,15 @@ def _limit_line(entry: Entry, limit: WorkedLimit, units: UnitSystem) -> LimitLin
         "",
         NO_LIMIT if limit.unlimited_because else mass_text(limit.limit_kg, units),
         limit.decided_by,
-        (*(nameless(entry, line) for line in limit.lines), *_no_limit_lines(limit)),
+        (*(nameless(entry, line) for line in limit.lines), *_no_limit(limit)),
         tuple(nameless(entry, text) for text in limit.unknown_because),
         nameless(entry, limit.open_because),
         tuple(nameless(entry, text) for text in limit.flags),
     )
 
 
-def _no_limit_lines(limit: WorkedLimit) -> tuple[str, ...]:
-    if not limit.unlimited_because:
-        return ()
-    return (f"no limit of charge: {limit.unlimited_because}", *(f"instead: {text}" for text in limit.conditions))
+def _no_limit(limit: WorkedLimit) -> tuple[str, ...]:
+    return (f"no limit of charge: {limit.unlimited_because}",) if limit.unlimited_because else ()
 
 
 def _block(limit: WorkedLimit, lines: list[tuple[Entry, LimitLine]]) -> LimitBlock:

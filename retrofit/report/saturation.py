@@ -59,7 +59,7 @@ def saturation_text(table: SaturationTable, units: UnitSystem, columns: int, str
         columns: Width to wrap prose to. [characters]
         strong: How a heading is set off.
     """
-    heading = strong(f"{table.refrigerant.designation}: saturation pressure over temperature")
+    heading = strong(f"{table.refrigerant.display_name}: saturation pressure over temperature")
     use = "Superheat is counted from the dew column, subcooling from the bubble column; gauge pressures at sea level."
     grade = f"Grade of the model: {table.grade.text}."
     cautions = [_caution(item, columns) for item in cautions_for(table.refrigerant)]

@@ -6,6 +6,7 @@ from collections.abc import Callable
 from dataclasses import dataclass
 
 from retrofit.checks.changeover import chosen_for_cards
+from retrofit.checks.survey import unknowns
 from retrofit.report.room import has_room
 from retrofit.study import Comparison
 
@@ -37,6 +38,10 @@ class Place:
     title: str
     number: str
     words: str
+
+
+def _has_open(comparison: Comparison) -> bool:
+    return bool(unknowns(comparison))
 
 
 def _has_law(comparison: Comparison) -> bool:
@@ -92,6 +97,7 @@ MAIN = (
     Section("certainty", "How sure", _has_life),
     Section("method", "Method statement"),
     Section("assumptions", "Assumptions"),
+    Section("open", "To be found out on site", _has_open),
     Section("limits", "Limits"),
     Section("signing", "Sign-off"),
 )

@@ -43,8 +43,9 @@ from retrofit.checks.prospects import (
     quantile,
     sum_of_option,
 )
+from retrofit.checks.reading_words import contradiction_words, duty_words
 from retrofit.figures.tornado import limits_text
-from retrofit.report.agreeing import calibration_text
+from retrofit.refrigerants import with_hyphens
 from retrofit.report.certainty import chance, method
 from retrofit.report.emissions import check_months
 from retrofit.report.terminal import cautions_text
@@ -54,7 +55,7 @@ from retrofit.study import Comparison
 from retrofit.study.money import AbatementState, PaybackState, abatement_of
 from retrofit.study.sums import ComparisonState, Sum
 from retrofit.study.year import YearRun
-from retrofit.units import UnitSystem, format_number, listed, shown
+from retrofit.units import UnitSystem, format_number, listed, shown, told
 
 NONE = "none"
 Cells = tuple[Column, list[str]]
@@ -73,9 +74,13 @@ def year_text(comparison: Comparison, units: UnitSystem, columns: int, strong: E
     words, options = outlook(comparison, units), prospects(comparison)
     parts = [
         strong(shown(comparison.case.title, 200)),
+        "\n".join(
+            paragraph(text, columns)
+            for text in (told(duty_words(comparison), units), *contradiction_words(comparison, units))
+            if text
+        ),
         *(_matters(matters, columns) for matters in (words.year, words.emissions, words.money)),
         "\n".join(paragraph(text, columns) for text in (words.absent, words.stopped, words.meter, words.swing) if text),
-        paragraph(calibration_text(comparison, units), columns),
         *cautions_text(comparison, columns, strong),
         _year(comparison, options, units, columns, strong),
         _emissions(comparison, options, units, columns, strong),
@@ -449,7 +454,8 @@ def _swings(comparison: Comparison, units: UnitSystem, strong: Emphasis) -> str:
         Column("At low"), Column("At high"),
     ]  # fmt: skip
     base = result_text(comparison, units, name, swings[0].base)
-    return f"{strong(f'What moves {TOLD[name]} of {option.name} most ({base} at the base)')}\n{text_table(heads, rows)}"
+    heading = strong(f"What moves {TOLD[name]} of {with_hyphens(option.name)} most ({base} at the base)")
+    return f"{heading}\n{text_table(heads, rows)}"
 
 
 def _small_print(comparison: Comparison, options: Sequence[Prospect], columns: int, strong: Emphasis) -> str:

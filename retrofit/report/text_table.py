@@ -1,4 +1,7 @@
-"""Plain-text tables for a terminal: numbers to the right, two lines of heading, thin rules, no boxes."""
+"""Plain-text tables for a terminal: numbers to the right, two lines of heading, thin rules, no boxes.
+
+Designations are printed as ASHRAE 34 writes them, whatever the text that comes in says.
+"""
 
 from __future__ import annotations
 
@@ -6,6 +9,8 @@ import textwrap
 import unicodedata
 from collections.abc import Sequence
 from dataclasses import dataclass
+
+from retrofit.refrigerants import with_hyphens
 
 GAP = "  "
 RULE = "─"
@@ -28,7 +33,8 @@ def text_table(columns: Sequence[Column], rows: Sequence[Sequence[str]]) -> str:
         rows: Cells, one a column.
     Returns: Heading, unit line, rule and rows; every column as wide as its widest cell.
     """
-    heads = [[column.heading for column in columns], [column.unit for column in columns]]
+    heads = [[with_hyphens(column.heading) for column in columns], [column.unit for column in columns]]
+    rows = [[with_hyphens(cell) for cell in row] for row in rows]
     widths = [max(width(line[i]) for line in [*heads, *rows]) for i in range(len(columns))]
 
     def line(cells: Sequence[str]) -> str:
@@ -54,4 +60,5 @@ def _pad(text: str, to: int, is_words: bool) -> str:
 def paragraph(text: str, columns: int, indent: str = "", first: str | None = None) -> str:
     """Return a text wrapped to a number of columns, with an indent and another one for the first line."""
     start = indent if first is None else first
+    text = with_hyphens(text)
     return textwrap.fill(text, columns, initial_indent=start, subsequent_indent=indent, break_long_words=False)

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 
-from retrofit.checks.outlook import rounded_text
+from retrofit.checks.outlook import capacity_words, rounded_text
 from retrofit.checks.prospects import Prospect, life_of_result
 from retrofit.report.plain import plain
 from retrofit.report.prospect_rows import Options, missing_of
@@ -151,7 +151,9 @@ def _row(
 def _unmet(option: Prospect) -> str:
     if option.year is None or not option.year.unmet_h:
         return ""
-    return "part of its load is unmet, so its electricity buys less than that of an option that meets it"
+    beside = capacity_words(option)
+    words = "part of its load is unmet, so its electricity buys less than that of an option that meets it"
+    return f"{words}; {beside}" if beside else words
 
 
 def _unsolved(option: Prospect) -> str:

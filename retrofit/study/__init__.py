@@ -1,6 +1,6 @@
 """One case with all its candidates, solved once into one frozen result that everything else shows."""
 
-from retrofit.study.compare import compare
+from retrofit.study.compare import case_as_taken, compare
 from retrofit.study.result import (
     AtRest,
     Baseline,
@@ -38,5 +38,6 @@ __all__ = [
     "Point",
     "RestState",
     "Verdict",
+    "case_as_taken",
     "compare",
 ]

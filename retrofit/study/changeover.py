@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass, replace
 
@@ -12,18 +13,22 @@ from retrofit.cycle import pressure_at_mean
 from retrofit.equipment.balance import balance
 from retrofit.equipment.oil import changes_needed
 from retrofit.equipment.vessels import co2_equivalent_t, cylinders_needed, vessel_fill
-from retrofit.errors import NoSolutionError, OutsideValidRangeError, RetrofitError
+from retrofit.errors import NoSolutionError, RetrofitError
 from retrofit.properties import Fluid, fluid
+from retrofit.study.draws import today_rows
 from retrofit.study.hardware.numbers import HardwareNumbers
 from retrofit.study.installed import ExistingPlant, machine_at
 from retrofit.study.operating import balanced
-from retrofit.study.performance import as_numbers, electric_W
+from retrofit.study.performance import electric_W
 from retrofit.study.practice import practice
-from retrofit.study.result import Comparison, Entry, Performance
+from retrofit.study.result import Comparison, Entry, FloatArray, Performance
 from retrofit.study.saturation import saturation_table
-from retrofit.study.today import today_of
+from retrofit.study.uncertain import physical_inputs, sample
 from retrofit.units import ZERO_C_K
 
+DRAWS, SEED = 200, 1  # of what may be off in the inputs: percentiles are within a tenth of a window's width
+BASE = 0  # the row of a sample with every input at its base
+READ = ("p_evap_Pa", "p_cond_Pa", "T_discharge_K", "power_W")
 LITRE_M3 = 1e-3
 CLOSE_K = 0.01
 SAME_DAY_K = 0.05
@@ -90,7 +95,7 @@ class Weight:
 
 @dataclass(frozen=True)
 class Bands:
-    """How far what is expected may be from what a plant does.
+    """How far the model may be from what a plant does.
 
     Attributes:
         pressure, power: Relative.
@@ -256,16 +261,14 @@ def _expected(
     if numbers.basis != "plant":
         return (), entry.plant_reason or comparison.existing.plant_reason or "the plant as installed is not computed"
     try:
-        site = today_of(case, fluid(case.plant.refrigerant)).site
+        rows = sample(physical_inputs(case), DRAWS, SEED)
+        plant = today_rows(case, fluid(case.plant.refrigerant), rows).plant
         behaviour = fluid(entry.refrigerant.designation)
+        held = _held_dew_K(numbers, behaviour)
     except RetrofitError as error:
         return (), error.message
-    assert site.plant is not None, "the basis says that the plant balances"
-    try:
-        held = _held_dew_K(numbers, behaviour)
-    except (NoSolutionError, OutsideValidRangeError) as error:
-        return (), error.message
-    return _at_inlets(site.plant, behaviour, numbers, bands, held, _inlets(case, T_today_K)), ""
+    assert plant is not None, "the basis says that the plant balances"
+    return _at_inlets(plant, behaviour, numbers, bands, held, _inlets(case, T_today_K), rows.drawn), ""
 
 
 def _held_dew_K(numbers: HardwareNumbers, behaviour: Fluid) -> float:
@@ -300,9 +303,10 @@ def _at_inlets(
     bands: Bands,
     held_dew_K: float,
     inlets: Sequence[tuple[str, float]],
+    drawn: slice,
 ) -> tuple[Expected, ...]:
-    """Return what is expected at every condenser inlet, the plant balanced at all of them together."""
-    T_in = np.array([T_K for _, T_K in inlets])
+    """Return what is expected at every condenser inlet, the plant balanced for every draw of its inputs."""
+    T_in = np.array([T_K for _, T_K in inlets])[:, None]
     machine, starts = machine_at(plant, behaviour, np.asarray(plant.machine.evaporator.secondary.T_in_K), T_in)
     found = balance(
         behaviour, replace(machine, T_cond_lowest_K=held_dew_K), starts[0], np.maximum(starts[1], held_dew_K)
@@ -310,35 +314,56 @@ def _at_inlets(
     every = balanced(found)
     expected = []
     for place, (name, T_K) in enumerate(inlets):
-        if found.reason[place]:
-            expected.append(Expected(name, T_K, reason=str(found.reason[place])))
+        if found.reason[place, BASE]:
+            expected.append(Expected(name, T_K, reason=str(found.reason[place, BASE])))
             continue
-        one = as_numbers(every, place)
-        is_held = one.T_cond_dew_K <= held_dew_K + CLOSE_K
-        expected.append(replace(_windows(plant.case, numbers, bands, name, T_K, one), is_held=is_held))
+        readings = {quantity: getattr(every, quantity)[place] for quantity in READ}
+        is_held = float(every.T_cond_dew_K[place, BASE]) <= held_dew_K + CLOSE_K
+        expected.append(replace(_windows(plant.case, numbers, bands, name, T_K, readings, drawn), is_held=is_held))
     return tuple(expected)
 
 
 def _windows(
-    case: Case, numbers: HardwareNumbers, bands: Bands, name: str, T_K: float, found: Performance[float]
+    case: Case,
+    numbers: HardwareNumbers,
+    bands: Bands,
+    name: str,
+    T_K: float,
+    readings: Mapping[str, FloatArray],
+    drawn: slice,
 ) -> Expected:
-    """Return what is expected, each number widened by its band."""
+    """Return what is expected of each reading, wide enough for its inputs and for the model."""
     at_design = numbers.current_A.new
     # Motor current goes with power, as everywhere in the hardware.
-    current = None if at_design is None else at_design * found.power_W / numbers.new.design.power_W
+    per_watt = None if at_design is None else at_design / numbers.new.design.power_W
+    p_evap, p_cond, T_discharge, power = (readings[quantity] for quantity in READ)
+    electric = electric_W(case, power)
     return Expected(
         name,
         T_K,
-        p_evap_Pa=_relative(found.p_evap_Pa, bands.pressure),
-        p_cond_Pa=_relative(found.p_cond_Pa, bands.pressure),
-        T_discharge_K=Window(found.T_discharge_K - bands.T_discharge_K, found.T_discharge_K + bands.T_discharge_K),
-        power_W=_relative(float(electric_W(case, found.power_W)), bands.power),
-        current_A=None if current is None else _relative(current, bands.power),
+        p_evap_Pa=_window(p_evap, drawn, bands.pressure * p_evap[BASE]),
+        p_cond_Pa=_window(p_cond, drawn, bands.pressure * p_cond[BASE]),
+        T_discharge_K=_window(T_discharge, drawn, bands.T_discharge_K),
+        power_W=_window(electric, drawn, bands.power * electric[BASE]),
+        current_A=None if per_watt is None else _window(power * per_watt, drawn, bands.power * power[BASE] * per_watt),
     )
 
 
-def _relative(value: float, band: float) -> Window:
-    return Window(value * (1.0 - band), value * (1.0 + band))
+def _window(readings: FloatArray, drawn: slice, band: float) -> Window:
+    """Return what a reading is expected to lie between.
+
+    Args:
+        readings: It at the base of every input, and for every draw of them. [SI]
+        drawn: Where the draws stand.
+        band: Band of the model to either side. [SI]
+    Source: 10th and 90th percentile of the draws; what the model may be off has nothing to do with the inputs, so both
+        distances from the base are added in quadrature (JCGM 100:2008, 5.1.2).
+    """
+    base = float(readings[BASE])
+    low, high = np.nanpercentile(readings[drawn], (10.0, 90.0))
+    return Window(
+        base - math.hypot(max(base - float(low), 0.0), band), base + math.hypot(max(float(high) - base, 0.0), band)
+    )
 
 
 # -- the pressure-temperature table ------------------------------------------------------------------

@@ -87,6 +87,20 @@ def compare(case: Case, on_build: OnBuild | None = None) -> Comparison:
     return held_against_model(comparison, today, behaviour)
 
 
+def case_as_taken(case: Case, on_build: OnBuild | None = None) -> Case:
+    """Return the case as `compare` takes it: with what its readings say in place of what it leaves out.
+
+    Args:
+        case: The case.
+        on_build: As for `compare`; only the tables of today's refrigerant are built, and only for readings.
+    Returns: The case; unchanged where today's refrigerant cannot be computed.
+    """
+    if case.readings is None:
+        return case
+    alone = replace(case, compare=case.compare.model_copy(update={"candidates": ()}))
+    return replace(compare(alone, on_build).case, compare=case.compare)
+
+
 def _candidate(
     case: Case,
     today: Today | None,

@@ -47,6 +47,8 @@ MOST_DRAWS = 20_000  # at once, for the memory that they take
 MOST_SWINGS = 10
 QUANTILES = (0.1, 0.5, 0.9)
 ROUNDING = 1e-9
+CAPACITY = "capacity"  # code of the finding on what the plant delivers at its design point
+NO_UNMET = "In the year computed every hour meets its load."
 OUTCOMES = ("carries", "pays_back")  # 1 where it does, 0 where not: a share and no quantiles
 NO_YEAR = "the case has no [year]"
 MODEL = ("capacity", "cop")
@@ -144,7 +146,32 @@ def with_life(comparison: Comparison, draws: int = DRAWS, seed: int = SEED) -> C
         seed: The same seed gives the same numbers. [-]
     Returns: The same numbers, with `life`; an option that cannot be computed has its reason there.
     """
-    return replace(comparison, life=life_of(comparison, draws, seed))
+    return lived(comparison, life_of(comparison, draws, seed))
+
+
+def lived(comparison: Comparison, life: Life) -> Comparison:
+    """Return a result with its remaining life, each finding on its capacity beside the unmet load of its year.
+
+    Args:
+        comparison: An assessed result.
+        life: Its remaining life.
+    """
+    candidates = tuple(_beside_year(entry, life) for entry in comparison.candidates)
+    return replace(comparison, life=life, candidates=candidates)
+
+
+def _beside_year(entry: Entry, life: Life) -> Entry:
+    year = life.years.get(entry.refrigerant.designation)
+    if year is None or entry.is_new_plant:
+        return entry
+    told = f"In the year computed {year.unmet_h:.0f} h have unmet load." if year.unmet_h else NO_UNMET
+    findings = tuple(
+        replace(finding, fact=f"{finding.fact} {told}")
+        if finding.code == CAPACITY and told not in finding.fact
+        else finding
+        for finding in entry.findings
+    )
+    return replace(entry, findings=findings)
 
 
 @dataclass(frozen=True)

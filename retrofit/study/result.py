@@ -185,6 +185,7 @@ class Component:
         threshold: The threshold in words, with its value.
         source: Where the threshold comes from.
         ask: What to ask the maker or to look up; may be empty.
+        missing: Full keys of the case that would settle what is not known; none where nothing is missing.
     """
 
     code: str
@@ -195,6 +196,7 @@ class Component:
     threshold: str
     source: str
     ask: str
+    missing: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True)

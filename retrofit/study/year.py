@@ -8,7 +8,7 @@ from typing import TypeVar
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
-from retrofit.case import Case, Year
+from retrofit.case import Case, Year, present
 from retrofit.case.weather import Weather
 from retrofit.cycle import Temperatures, matched_pressures
 from retrofit.equipment.balance import Machine, balance
@@ -299,7 +299,7 @@ def lowest_condensing_K(case: Case, existing: Fluid) -> float | None:
     """
     if case.year is not None and case.year.lowest_condensing_K is not None:
         return case.year.lowest_condensing_K
-    p_Pa = case.controls.head_pressure_Pa if case.controls else None
+    p_Pa = present(case.controls.head_pressure_Pa) if case.controls else None
     return None if p_Pa is None else 0.5 * float(existing.dew(p_Pa).T_K + existing.bubble(p_Pa).T_K)
 
 

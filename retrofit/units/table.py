@@ -156,6 +156,13 @@ KINDS: Mapping[str, Kind] = {
         {"m3": Unit(1.0), "l": Unit(1e-3), "L": Unit(1e-3), "ft3": Unit(CUBIC_FOOT_M3)},
         "m3, l or ft3",
     ),
+    "velocity": Kind(
+        "a velocity",
+        "m/s",
+        "4.5 m/s",
+        {"m/s": Unit(1.0), "ft/min": Unit(FOOT_M / MINUTE_S), "fpm": Unit(FOOT_M / MINUTE_S)},
+        "m/s or ft/min",
+    ),
     "area": Kind(
         "an area",
         "m2",

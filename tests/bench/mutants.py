@@ -32,7 +32,21 @@ COMPARED = {ast.Lt: ast.Gt, ast.Gt: ast.Lt, ast.LtE: ast.GtE, ast.GtE: ast.LtE}
 NAMES = {"maximum": "minimum", "minimum": "maximum", "max": "min", "min": "max", "fmax": "fmin", "fmin": "fmax",
          "sin": "cos", "cos": "sin", "exp": "expm1", "log": "log1p"}  # fmt: skip
 # Survivors that change no result, by file, function and change, with why.
-EQUIVALENT: dict[tuple[str, str, str], str] = {}
+_STEERS = "steers the steps alone; what they end on is checked against the equation"
+_ONE_PASCAL = "one pascal among 100 000"
+_TOLERANCE = "how closely something is solved or told apart, far below what is shown"
+EQUIVALENT: dict[tuple[str, str, str], str] = {
+    ("cycle/matching.py", "_pressure_where", "(miss - new) / step -> (miss - new) * step"): _STEERS,
+    ("equipment/balance.py", "_slopes", "0.05 -> 0.05500000000000001"): _STEERS,
+    ("equipment/balance.py", "", "1e-06 -> 1.1e-06"): _TOLERANCE,
+    (
+        "equipment/oil.py",
+        "changes_needed",
+        "np.log(wanted) / np.log(kept) - 1e-09 -> np.log(wanted) / np.log(kept) - 1.1000000000000001e-09",
+    ): _TOLERANCE,
+    ("study/installed.py", "existing_plant", "-heat -> +heat"): "the capacity rate takes its absolute value",
+    ("equipment/polynomial.py", "_even_ln_p", "np.log -> np.log1p"): _ONE_PASCAL,
+}
 
 
 class Mutant(NamedTuple):

@@ -4,6 +4,7 @@ import pytest
 from hypothesis import HealthCheck, given, settings
 from hypothesis import strategies as st
 
+from retrofit.case import read_case
 from retrofit.case.model import FIELDS, TABLES
 from retrofit.case.rules import GIVEN_ONCE, NEEDS, NOT_BOTH, ORDERS, RISING
 from retrofit.errors import CaseFileError
@@ -368,3 +369,17 @@ def test_any_values_of_the_keys_are_read_or_refused(case, lines):
         outcome = all(problem.line and problem.text.isprintable() for problem in refusal.problems)
 
     assert outcome
+
+
+def test_what_may_be_recommended_is_named_once(tmp_path):
+    """A candidate that is the refrigerant in the plant too stands once in the list of what can be written."""
+    path = tmp_path / "plant.toml"
+    path.write_text(
+        "[plant]\nrefrigerant = 'R404A'\n[duty]\ncooling = '5 kW'\nevaporating = '-8 degC'\ncondensing = '40 degC'\n"
+        "[compare]\ncandidates = ['R404A', 'R404A', 'R448A']\n[report]\nrecommended = 'R22'\n",
+        encoding="utf-8",
+    )
+    with pytest.raises(CaseFileError) as caught:
+        read_case(path)
+
+    assert 'R-22 is not compared here; write "R404A" or "R448A", or add it to compare.candidates' in str(caught.value)

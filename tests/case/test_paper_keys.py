@@ -1,13 +1,17 @@
 """The keys of [report]: texts, a logo that a report can carry, revisions, and what is recommended."""
 
+import base64
 import datetime
+import io
 import os
 import struct
+import time
 import zlib
 
 import pytest
 from hypothesis import given
 from hypothesis import strategies as st
+from PIL import Image
 
 from retrofit.case.logo import LARGEST_LOGO_BYTES, logo_at
 from retrofit.case.paper import Revision
@@ -33,18 +37,29 @@ def chunk(kind, body):
     return struct.pack(">I", len(body)) + kind + body + struct.pack(">I", zlib.crc32(kind + body))
 
 
-def png(width=2, height=2, ihdr=b"\x08\x00\x00\x00\x00"):
-    """Return a grey picture of the size asked for, its rows as short as they may be."""
-    pixels = zlib.compress(b"\x00" * 8)
-    head = chunk(b"IHDR", struct.pack(">II", width, height) + ihdr)
-    return b"\x89PNG\r\n\x1a\n" + head + chunk(b"IDAT", pixels) + chunk(b"IEND", b"")
+def png(width=2, height=2, pixels=b"\x00" * 6):
+    """Return a grey picture that claims a size, with its rows packed (PNG, third edition, 7.2 and 11.2.1)."""
+    head = chunk(b"IHDR", struct.pack(">II", width, height) + b"\x08\x00\x00\x00\x00")
+    return b"\x89PNG\r\n\x1a\n" + head + chunk(b"IDAT", zlib.compress(pixels)) + chunk(b"IEND", b"")
 
 
-def jpeg(width=2, height=3):
-    """Return start, an application segment, and a frame header (ITU-T T.81, B.2.2)."""
-    app = b"\xff\xe0" + struct.pack(">H", 4) + b"ab"
-    frame = b"\xff\xc0" + struct.pack(">HBHHB", 11, 8, height, width, 1) + b"\x01\x11\x00"
-    return b"\xff\xd8" + app + frame + b"\xff\xd9"
+def drawn(kind, width=3, height=2):
+    """Return a picture as a library of others writes it."""
+    buffer = io.BytesIO()
+    Image.new("RGB", (width, height), (0, 90, 120)).save(buffer, kind)
+    return buffer.getvalue()
+
+
+def svg(inside, **attributes):
+    """Return a drawing with something in it."""
+    more = "".join(f' {name}="{value}"' for name, value in attributes.items())
+    return f'<svg xmlns="http://www.w3.org/2000/svg" viewBox="0 0 8 8"{more}>{inside}</svg>'.encode()
+
+
+def nested(how, levels=10, times=10):
+    """Return a drawing of some kilobytes whose parts repeat each other: ten of ten of ten, ten levels up."""
+    parts = "".join(how(level, times) for level in range(1, levels))
+    return svg(f'<defs><g id="p0"><rect width="1" height="1"/></g>{parts}</defs><use href="#p{levels - 1}"/>')
 
 
 def test_a_report_as_written(case, tmp_path):
@@ -80,7 +95,7 @@ def test_nothing_of_it_is_needed(case):
 
 
 FAULTS = {
-    "a refrigerant not compared": ('recommended = "R290"', "report.recommended", "R290 is not compared here"),
+    "a refrigerant not compared": ('recommended = "R290"', "report.recommended", "R-290 is not compared here"),
     "no refrigerant": ('recommended = "R4040"', "report.recommended", "not in the catalogue"),
     "twice the same": ('recommended = "R448A"\nfallback = "R448A"', "report.fallback", "is what is recommended"),
     "no text": ("client = 7", "report.client", "a text is needed"),
@@ -116,7 +131,20 @@ def test_a_fault_is_told_with_its_line(lines, key, words, complaints):
 
 PICTURES = {
     "png": (png(), "image/png"),
-    "jpeg": (jpeg(), "image/jpeg"),
+    "png of a library": (drawn("PNG"), "image/png"),
+    "jpeg": (drawn("JPEG"), "image/jpeg"),
+    "svg that uses a part": (svg('<g id="a"><path d="M0 0h1"/></g><use href="#a" x="2"/>'), "image/svg+xml"),
+    "svg with colours for every part": (
+        svg(
+            '<style>.a{fill:url(#c)}</style><linearGradient id="c"><stop/><stop/></linearGradient>'
+            + '<path class="a" d="M0 0h1"/>' * 900
+        ),
+        "image/svg+xml",
+    ),
+    "svg with a picture": (
+        svg(f'<image href="data:image/png;base64,{base64.b64encode(drawn("PNG")).decode()}"/>'),
+        "image/svg+xml",
+    ),
     "svg": (SVG, "image/svg+xml"),
     "svg with a head": (b'\xef\xbb\xbf<?xml version="1.0" encoding="UTF-8"?>\n<!-- a -->' + SVG, "image/svg+xml"),
     # Its script cannot run: it is shown as a picture only.
@@ -144,24 +172,83 @@ NO_PICTURES = {
     "huge png": png(100_000, 100_000),
     "flat png": png(0, 5),
     "png that claims a long chunk": b"\x89PNG\r\n\x1a\n\xff\xff\xff\xffIHDR",
-    "cut jpeg": jpeg()[:8],
-    "huge jpeg": jpeg(65_000, 65_000),
+    "png with noise for pixels": png().replace(zlib.compress(b"\x00" * 6), b"\x07" * len(zlib.compress(b"\x00" * 6))),
+    "png cut in its pixels": drawn("PNG", 300, 300)[:60],
+    "png that unpacks to gigabytes": png(4000, 4001, b"\0" * 1000),
+    "png of noise after its head": drawn("PNG")[:60] + b"\7" * 40,
+    "cut jpeg": drawn("JPEG", 40, 40)[:-40],
+    "jpeg without its picture": drawn("JPEG", 40, 40)[:200],
+    "huge jpeg": drawn("JPEG", 4001, 1),
     "jpeg that runs in circles": b"\xff\xd8\xff\xe0\x00\x00" * 9,
     "svg with entities": b'<!DOCTYPE svg [<!ENTITY a "b">]>' + SVG,
     "svg cut": SVG[:-4],
     "svg in two bytes a letter": SVG.decode().encode("utf-16"),
     "svg without its name space": b"<svg/>",
+    "svg with a doctype": b"<!doctype svg>" + SVG,
+    "svg of another name space": b'<svg xmlns="urn:x"/>',
+    "svg that repeats by use": nested(
+        lambda level, times: f'<g id="p{level}">{f"""<use href="#p{level - 1}"/>""" * times}</g>'
+    ),
+    "svg that repeats by links": nested(
+        lambda level, times: (
+            f'<g id="p{level}">'
+            + f"""<use xmlns:l="http://www.w3.org/1999/xlink" l:href="#p{level - 1}"/>""" * times
+            + "</g>"
+        )
+    ),
+    "svg that repeats by patterns": nested(
+        lambda level, times: f'<pattern id="p{level}">{f"""<rect fill="url(#p{level - 1})"/>""" * times}</pattern>'
+    ),
+    "svg that repeats by masks": nested(
+        lambda level, times: (
+            f'<mask id="p{level}"><g style="mask:url(\'#p{level - 1}\')">{"<rect/>" * times}</g></mask>'
+        )
+    ),
+    "svg that repeats by its style sheet": svg(
+        f'<style>rect{{fill:url(#p)}}</style><pattern id="p">{"<circle/>" * 200}</pattern>{"<rect/>" * 200}'
+    ),
+    "svg that repeats itself": svg('<g id="a"><use href="#a"/></g>'),
+    "svg that repeats itself in turns": svg('<g id="a"><use href="#b"/></g><g id="b"><use href="#a"/></g>'),
+    "svg with marks at every point": svg('<marker id="m"><rect/></marker><path marker-mid="url(#m)" d="M0 0"/>'),
+    "svg with too many parts": svg("<rect/>" * 6000),
+    "svg with parts in parts": svg("<g>" * 200 + "</g>" * 200),
+    "svg that fetches": svg('<image href="http://127.0.0.1/x.png"/>'),
+    "svg that fetches a file": svg('<use href="other.svg#a"/>'),
+    "svg with a drawing in it": svg('<image href="data:image/svg+xml;base64,AAAA"/>'),
+    "svg with a broken picture": svg('<image href="data:image/png;base64,AAAA"/>'),
+    "svg with half a picture": svg('<image href="data:image/png;base64,A"/>'),
+    "svg with a huge picture": svg(
+        f'<image href="data:image/png;base64,{base64.b64encode(png(100_000, 100_000)).decode()}"/>'
+    ),
     "too large": SVG + b" " * LARGEST_LOGO_BYTES,
 }
 
 
 @pytest.mark.parametrize("content", NO_PICTURES.values(), ids=NO_PICTURES)
 def test_what_cannot_be_shown_is_refused(content, tmp_path):
-    """The complaint names the file."""
+    """The complaint names the file, and comes in a moment."""
     (tmp_path / "logo").write_bytes(content)
+    begun = time.perf_counter()
 
     with pytest.raises(QuantityError, match='"logo" is'):
         logo_at(tmp_path, "logo")
+    assert time.perf_counter() - begun < 3.0
+
+
+def test_a_link_out_of_the_folder_is_no_logo(tmp_path):
+    """Neither a link nor a folder that is one; a link within the folder is."""
+    folder = tmp_path / "case"
+    folder.mkdir()
+    (tmp_path / "secret.svg").write_bytes(SVG)
+    (folder / "mine.svg").write_bytes(SVG)
+    (folder / "out.svg").symlink_to(tmp_path / "secret.svg")
+    (folder / "up").symlink_to(tmp_path)
+    (folder / "in.svg").symlink_to(folder / "mine.svg")
+
+    for name in ("out.svg", "up/secret.svg"):
+        with pytest.raises(QuantityError, match="is a link out of the folder"):
+            logo_at(folder, name)
+    assert logo_at(folder, "in.svg").content == SVG
 
 
 @given(content=st.binary(max_size=80), start=st.sampled_from([b"", b"\x89PNG\r\n\x1a\n", b"\xff\xd8\xff", b"<svg"]))

@@ -383,7 +383,7 @@ def test_every_table_of_the_file_is_known():
         ("", "[evaporator]\nfilm_factor = 11", "evaporator.film_factor", "0.1 to 10"),
         ("", "[evaporator]\nfilm_factor = {R999 = 1.0}", "evaporator.film_factor", "not in the catalogue"),
         ("", "[evaporator]\nfilm_factor = {R32 = 0}", "evaporator.film_factor", '"R32": "0" is outside'),
-        ("", "[evaporator]\nfilm_factor = {R32 = 1, r-32 = 1}", "evaporator.film_factor", "R32 is in the table twice"),
+        ("", "[evaporator]\nfilm_factor = {R32 = 1, r-32 = 1}", "evaporator.film_factor", "R-32 is in the table twice"),
         ("", "[evaporator]\npressure_drop = '1 bar'", "evaporator.pressure_drop", "a temperature difference is needed"),
         ("evaporator = {inlet = '2 degC'}", "", "plant.evaporator", "a table stands where a word is needed"),
         ("", "[condenser.inlet]", "condenser.inlet", "a table stands where a temperature is needed"),

@@ -172,7 +172,7 @@ def test_options_are_found_by_any_spelling_of_their_refrigerant(case):
 @pytest.mark.parametrize(
     ("text", "key", "words"),
     [
-        ("[options.R449A]", "options.R449A", "R449A is neither in the plant nor a candidate"),
+        ("[options.R449A]", "options.R449A", "R-449A is neither in the plant nor a candidate"),
         ("[options.R449]", "options.R449", "is not in the catalogue, did you mean"),
         ("[options.R448A]\n[options.r-448a]", "options.r-448a", 'twice, here and as "R448A"; keep one'),
         ('[options]\nR448A = "x"', "options.R448A", "a text stands where a table is needed; begin it with [options.R4"),

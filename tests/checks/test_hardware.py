@@ -11,6 +11,7 @@ from retrofit.errors import CaseFileError
 from retrofit.refrigerants import find
 from retrofit.report.machine import UNITS
 from retrofit.study import RestState, Verdict, compare
+from retrofit.study.gaps import Gap
 from retrofit.study.hardware.numbers import OldNew
 from retrofit.units import IP, SI, told
 
@@ -528,7 +529,10 @@ def test_nothing_is_green_where_everything_is_missing(case_with):
 
 def test_a_pressure_above_a_limit_is_never_softened_by_what_is_missing(whole):
     """Above the nameplate is a stop also where the hottest day is not known."""
-    new = {"hottest": None, "missing": {**whole.candidates[0].hardware_numbers.new.missing, "hottest": "not given"}}
+    new = {
+        "hottest": None,
+        "missing": {**whole.candidates[0].hardware_numbers.new.missing, "hottest": Gap("not given")},
+    }
     comparison = turned(whole, new=new)
     first = comparison.candidates[0]
     hot = replace(first, duty=replace(first.duty, p_cond_Pa=AIR_PA + 29 * BAR))
@@ -591,7 +595,7 @@ def with_thresholds(comparison, **own):
 
 def test_a_threshold_of_the_case_goes_before_the_file(whole):
     """A discharge limit of 50 degC turns the row and the gate, and its source says who set it."""
-    mild = {"work": 40.0, "stop": 50.0}
+    mild = {"work": "40 degC", "stop": "50 degC"}
     comparison = with_thresholds(whole, discharge_temperature=mild)
     found = row(comparison, "discharge-temperature")
 
@@ -654,7 +658,8 @@ def test_every_row_listens_to_the_case(whole, name):
     }[name]
     figures = thresholds_for(whole.case)[name].figures
     below = name in ("suction_velocity_low", "riser_flow_reversal")
-    own = dict.fromkeys(figures, 1e6 if below else 1e-6)
+    figure = 1e6 if below else 1e-6
+    own = dict.fromkeys(figures, f"{figure:g} m/s" if name == "suction_velocity_low" else figure)
 
-    assert f"{own['work']:g}" in row(with_thresholds(whole, **{name: own}), code).threshold
+    assert f"{figure:g}" in row(with_thresholds(whole, **{name: own}), code).threshold
     assert row(with_thresholds(whole, **{name: own}), code).verdict in ("adjust", "replace")

@@ -208,7 +208,7 @@ def test_json_has_states_reasons_causes_and_numbers(plant_of, model):
     assert power["difference"] == pytest.approx(0.2, rel=1e-4)
     assert power["causes"][0]["code"] == "motor-and-drive"
     assert plain["calibration"] is None
-    assert plain["duty_against_plant"]["state"] == "within what the plant can be"
+    assert plain["duty_against_plant"]["state"] == "within what the plant can give"
     assert found["duty_against_plant"]["state"] == "more than the plant gives"
     assert found["duty_against_plant"]["share"] == pytest.approx(300e3 / model.cooling_W)
     assert found["calibration"]["state"] == "applied"

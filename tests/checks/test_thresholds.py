@@ -6,6 +6,7 @@ from importlib.resources import files
 import pytest
 
 from retrofit.checks import Threshold, assess, threshold, thresholds
+from retrofit.errors import QuantityError
 
 TEXT = files("retrofit.checks").joinpath("thresholds.toml").read_text(encoding="utf-8")
 TABLE = tomllib.loads(TEXT)
@@ -86,3 +87,17 @@ def test_gates_take_their_limits_from_the_file(solved, limits, name, figures, co
     assert code not in before
     assert after[code].level == ("stop" if "stop" in figures else "work")
     assert after[code].source == TABLE[name]["source"]
+
+
+def test_every_threshold_can_be_set_with_the_words_its_message_gives():
+    """A figure with a unit is refused without; written as the message says, it is the figure of the file again."""
+    for name in thresholds._table():
+        limit = threshold(name)
+        for level, figure in limit.figures.items():
+            if not limit.kind:
+                assert limit.read(level, figure) == figure
+                continue
+            with pytest.raises(QuantityError) as caught:
+                limit.read(level, figure)
+            written = str(caught.value).rpartition(" = ")[2].strip('"')
+            assert limit.read(level, written) == pytest.approx(figure), name

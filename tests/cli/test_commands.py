@@ -146,7 +146,7 @@ def test_check_says_what_can_be_used_and_what_is_assumed(run, good):
     result = run("check", good)
 
     assert (result.exit_code, result.stderr) == (0, "")
-    assert "can be used. Candidates: R513A, R290." in result.stdout
+    assert "can be used. Candidates: R-513A, R-290." in result.stdout
     assert "assumed: duty.reading = dew (" in result.stdout
     assert "assumed: compressor.isentropic_efficiency = 0.70 (" in result.stdout
 
@@ -199,7 +199,7 @@ def test_compare_prints_the_text_for_people(run, good):
     result = run("compare", good)
 
     assert result.exit_code == 0
-    assert result.stdout.startswith("Corner shop\nR134a today: ")
+    assert result.stdout.startswith("Corner shop\nR-134a today: ")
     assert result.stdout.index("\nCautions\n") < result.stdout.index("Same duty, 20.0\N{NO-BREAK SPACE}kW")
 
 
@@ -308,8 +308,8 @@ def test_commission_writes_the_sheet_of_one_candidate(run, good, site_copy, tmp_
 @pytest.mark.parametrize(
     ("arguments", "status", "word"),
     [
-        (["R4448A"], 2, "did you mean R448A"),
-        (["R22"], 1, "R22 is no candidate of this case; its candidates are"),
+        (["R4448A"], 2, "did you mean R-448A"),
+        (["R22"], 1, "R-22 is no candidate of this case; its candidates are"),
         (["R448A", "--inlet", "-400 degC"], 2, "-100 degC to 150 degC"),
         (["R448A", "--inlet", "5 bar"], 2, "a temperature is needed"),
     ],
@@ -329,11 +329,11 @@ def test_commission_says_what_is_wrong(run, good, tmp_path, arguments, status, w
 def test_refrigerants_lists_all_or_shows_those_named(run):
     """A row for each of the catalogue; with names, everything known of these."""
     everything, two = run("refrigerants").stdout, run("refrigerants", "r-404a", "R744").stdout
-    rows = [line.split(" ")[0] for line in everything.splitlines() if re.match(r"RE?\d", line)]
+    rows = [line.split(" ")[0] for line in everything.splitlines() if re.match(r"R-E?\d", line)]
 
-    assert rows == list(designations())
-    assert two.startswith("R404A")
-    assert "\nR744  carbon dioxide\n" in two
+    assert rows == [f"R-{name[1:]}" for name in designations()]
+    assert two.startswith("R-404A")
+    assert "\nR-744  carbon dioxide\n" in two
     assert [
         item["designation"] for item in json.loads(run("refrigerants", "--json", "R32").stdout)["refrigerants"]
     ] == ["R32"]
@@ -345,7 +345,7 @@ def test_an_unknown_refrigerant_exits_with_2_and_a_close_match(run, command):
     result = run(command, "R4448A")
 
     assert (result.exit_code, result.stdout) == (2, "")
-    assert re.fullmatch(r'retrofit: no refrigerant "R4448A": .*did you mean R448A.*\n', result.stderr)
+    assert re.fullmatch(r'retrofit: no refrigerant "R4448A": .*did you mean R-448A.*\n', result.stderr)
 
 
 def test_what_was_typed_is_not_obeyed_by_the_terminal(run):
@@ -401,7 +401,7 @@ def test_pt_of_a_refrigerant_without_a_model_is_our_error(run):
     result = run("pt", "R468A")
 
     assert (result.exit_code, result.stdout) == (1, "")
-    assert "no equation of state for R1132a" in result.stderr
+    assert "no equation of state for R-1132a" in result.stderr
 
 
 def test_an_interrupt_ends_quietly_with_130(run, good, monkeypatch):

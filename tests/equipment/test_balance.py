@@ -8,6 +8,7 @@ import numpy as np
 import pytest
 
 from retrofit.cycle import Settings, solve_cycle
+from retrofit.equipment import balance as module
 from retrofit.equipment.balance import (
     CHUNK,
     Balance,
@@ -210,3 +211,21 @@ def _by_property_library(machine: Machine) -> tuple[float, float]:
 
     T_evap, T_cond = fsolve(lacks, np.array([266.0, 314.0]), xtol=1e-8)
     return float(T_evap), float(T_cond)
+
+
+@pytest.mark.parametrize("place", [0, 1])
+def test_one_of_two_equations_is_not_a_balance(place: int, monkeypatch: pytest.MonkeyPatch) -> None:
+    """Where the search leaves one exchanger 1 % short there is no solution, and the error is 1 %."""
+    settled = module._settled
+
+    def short(*arguments: object) -> object:
+        T, state = settled(*arguments)  # type: ignore[arg-type]
+        lack = np.zeros_like(state.lack)
+        lack[place] = 0.01 * state.needed[place]
+        return T, replace(state, lack=lack)
+
+    monkeypatch.setattr(module, "_settled", short)
+    found = balance(fluid("R404A"), plant(), 265.0, 315.0)
+
+    assert not np.any(found.is_solved)
+    assert float(found.residual) == pytest.approx(0.01, rel=1e-9)

@@ -90,3 +90,16 @@ def test_mean_lies_between_the_smallest_and_the_largest_difference(
 
     assert lead_K * (1.0 - effectiveness) <= found * (1.0 + 1e-12)
     assert found <= lead_K * (1.0 + 1e-12)
+
+
+@pytest.mark.parametrize("arrangement", ["crossflow", "flooded"])
+@pytest.mark.parametrize(("change_K", "expected_K"), [(5.1, -0.1), (5.4, -0.4), (6.0, -1.0)])
+def test_a_medium_that_would_change_by_more_than_its_lead_is_short_by_the_rest(
+    arrangement: str, change_K: float, expected_K: float
+) -> None:
+    """By hand: the refrigerant is 5 K from the medium at its inlet; 5.1 K of change would cross it by 0.1 K."""
+    secondary = Secondary(305.15, 1000.0)
+
+    found = mean_difference(constant(300.15), SHARE, np.float64(1000.0 * change_K), secondary, arrangement)
+
+    assert found == pytest.approx(expected_K, abs=1e-9)

@@ -125,7 +125,7 @@ def test_two_windows_that_change_the_same_are_told(client, read):
     client.change(window="b", **{"in.duty.condensing": "47 degC"})
 
     assert refused == {"duty.condensing": "45 degC"}
-    assert "Condensing: changed to 45 degC (was 42 degC) by another window meanwhile, so 47 degC was not taken" in text
+    assert "Condensing: changed to 45 degC (was 42 degC) by another window meanwhile; to have 47 degC" in text
     assert field["value"] == "45 degC"
     assert dict(client.state.changes) == {"duty.condensing": "47 degC"}
     assert "by another window" not in client.page()
@@ -140,7 +140,7 @@ def test_what_another_window_changed_beside_it_is_told(client, read):
     client.change(**{"in.duty.condensing": "48 degC"})
 
     assert dict(client.state.changes)["duty.condensing"] == "48 degC"
-    assert "a page that did not show this yet. R454C hidden: changed to yes (was nothing)." in text
+    assert "a page that did not show this yet. R454C hidden: changed to yes (was no)." in text
     assert "did not show this yet" not in client.page()
 
 

@@ -159,6 +159,23 @@ def test_both_candidates_of_an_unresolved_limit_are_shown(case_with, made_at, re
     assert "unresolved" in shown_text(read_page, html)
 
 
+def test_conditions_instead_of_a_limit_are_listed_once(case_with, made_at, read_page):
+    """All parts in a machinery room: no limit by EN 378, which reads "none"; the conditions stand under the table."""
+    room = {"volume": "100 m3", "location": "III", "access": "c", "comfort": False, "largest_circuit": "20 kg"}
+    case = case_with(candidates=("R454B",), plant={"charge": "20 kg"}, room=room, law={"code": "EN 378"})
+    result = assess(compare(case))
+    html = render_html(result, made_at=made_at)
+    rows = read_page(html).tables["t-room"][1:]
+    part = re.search(r'<section id="room".*?</section>', html, re.DOTALL)[0]
+    terminal = " ".join(comparison_text(result, SI, 100).split())
+
+    assert [(row[4], row[5], row[6]) for row in rows] == [("none", "none", "under conditions")] * 2
+    assert '<span class="verdict-mark adjust">under conditions</span>' in part
+    for text in result.candidates[0].room.conditions:
+        assert part.count(text) == 1
+        assert text in terminal
+
+
 def test_the_machinery_room_has_its_numbers(page_of, read_page):
     """900 kg of R-22 ask for 0.07·√900 = 2.1 m³/s or 7560 m³/h (model codes); ammonia's table is not held: unknown."""
     rows = read_page(page_of("ice-rink", "si")).tables["t-machinery"]

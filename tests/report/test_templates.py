@@ -1,7 +1,6 @@
 """The reader's own templates are laid over the built-in ones, and cannot take the cautions away."""
 
 import os
-import resource
 import sys
 from pathlib import Path
 
@@ -183,6 +182,8 @@ ENDLESS = {
 @pytest.mark.parametrize("text", ENDLESS.values(), ids=ENDLESS)
 def test_a_template_that_takes_too_much_is_ended(text, render):
     """Time and memory of templates are bounded: ten seconds of computing, half a gigabyte, 20 million letters."""
+    import resource  # is not there on every system
+
     children = resource.getrusage(resource.RUSAGE_CHILDREN)
     spent = children.ru_utime + children.ru_stime
 

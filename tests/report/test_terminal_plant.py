@@ -36,7 +36,7 @@ def test_numbers_of_the_same_plant_are_the_results(assessed):
     result = assessed("harbour-market")
     text = comparison_text(result, SI, 100)
     for entry in result.candidates:
-        evap, cond, discharge, cooling, capacity, cop, runs, lacks = cells(text, entry.refrigerant.designation)
+        evap, cond, discharge, cooling, capacity, cop, runs, lacks = cells(text, entry.refrigerant.display_name)
 
         assert number(evap) == pytest.approx(entry.plant.full.T_evap_dew_K - 273.15, abs=0.051)
         assert number(cond) == pytest.approx(entry.plant.full.T_cond_dew_K - 273.15, abs=0.051)
@@ -73,7 +73,7 @@ def test_a_point_beyond_the_compressor_s_data_is_marked(assessed):
     text = comparison_text(replace(result, candidates=(outside, *result.candidates[1:])), SI, 100)
     lines = block(text, "Same plant")
 
-    assert [line.split(" ")[0] for line in lines if "*" in line] == ["R448A*", "*"]
+    assert [line.split(" ")[0] for line in lines if "*" in line] == ["R-448A*", "*"]
     assert "outside the data of the compressor" in lines[-1]
 
 
@@ -83,7 +83,7 @@ def test_a_refrigerant_without_the_basis_has_its_reason(assessed):
     lost = replace(result.candidates[0], plant=None, plant_reason="no pressures balance it")
     text = "\n".join(block(comparison_text(replace(result, candidates=(lost,)), SI, 100), "Same plant"))
 
-    assert "R448A not computed: no pressures balance it." in text
+    assert "R-448A not computed: no pressures balance it." in text
 
 
 def test_without_exchangers_the_basis_says_what_to_give(case_of):
@@ -111,7 +111,7 @@ def test_every_verdict_is_shown_within_the_columns(assessed, columns):
             name, *words = re.split(r"\s{2,}", line)
             rows.setdefault(name, []).extend(words)
 
-    assert heads == ["today", *(entry.refrigerant.designation for entry in result.candidates)]
+    assert heads == ["today", *(entry.refrigerant.display_name for entry in result.candidates)]
     assert max(len(line) for lines in tables for line in lines if not line.startswith("Hardware")) <= columns
     for place, entry in enumerate(result.entries):
         for item in entry.hardware:

@@ -61,8 +61,8 @@ def test_what_is_assumed_and_stopped_is_said(text):
     """The gate of the flammable option, the meter, the seed and the limits assumed stand in words."""
     flat = " ".join(text.split())
 
-    assert "A check stops R454C" in flat
-    assert "Not ranked, whatever the weights: R454C" in flat
+    assert "A check stops R-454C" in flat
+    assert "Not ranked, whatever the weights: R-454C" in flat
     assert "ratio 1.09" in flat
     assert "Calibrated: power 54 kW read" in flat
     assert "with seed 1" in flat
@@ -87,7 +87,7 @@ def test_hours_without_their_load_are_named(lived):
 
     text = " ".join(year_text(replace(comparison, life=life), SI, 100).split())
 
-    assert "some of it unmet, so that part of a lower electricity is load not met: R454B 41 h, 33.3 kWh" in text
+    assert "some of it unmet, so that part of a lower electricity is load not met: R-454B 41 h, 33.3 kWh" in text
 
 
 def test_what_the_case_has_no_table_for_is_said(lived):

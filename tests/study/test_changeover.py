@@ -1,6 +1,7 @@
 """The numbers of a job card: cylinders, oil changes, first charge, and what the gauges should show."""
 
 import csv
+import math
 from dataclasses import replace
 from pathlib import Path
 
@@ -13,6 +14,7 @@ from retrofit.study import compare
 from retrofit.study.bands import model_band
 from retrofit.study.changeover import Window, operating_span, pressure_rows, recovery
 from retrofit.study.practice import practice, practice_figures
+from retrofit.study.uncertain import PHYSICAL
 
 KELVIN = 273.15
 PUBLISHED = Path(__file__).parents[1] / "published" / "property_values.csv"
@@ -99,17 +101,69 @@ def test_a_warmer_condenser_raises_every_reading(usual):
         assert np.all(np.diff([middle(getattr(item, quantity)) for item in by_warmth]) > 0.0), quantity
 
 
-def test_the_window_at_the_design_point_is_the_result_with_its_band(usual):
+def windows(case):
+    """Return the one candidate of a case, and what is expected of it at the design point."""
+    result = assess(compare(case))
+    found = changeover_of(result, result.candidates[0])
+    return result.candidates[0], next(item for item in found.expected if item.name == "design")
+
+
+def exact(case, **widths):
+    """Return a case with no input off but those named, by half the width of its limits."""
+    return replace(case, widths={**dict.fromkeys(PHYSICAL, 0.0), **widths})
+
+
+def test_with_exact_inputs_a_window_is_the_band_of_the_model(case_with):
     """What is expected at the design point is what the comparison has there, as wide as the model's bands."""
-    result, found = usual
-    full, band = result.candidates[0].plant.full, model_band()
-    design = next(item for item in found.expected if item.name == "design")
+    case = exact(case_with(plant=PLANT, readings={"current": "92 A"}, **EXCHANGERS))
+    (entry, design), band = windows(case), model_band()
+    full = entry.plant.full
 
     assert middle(design.p_cond_Pa) == pytest.approx(full.p_cond_Pa, rel=1e-6)
     assert middle(design.T_discharge_K) == pytest.approx(full.T_discharge_K, abs=1e-3)
     assert design.p_evap_Pa.high / middle(design.p_evap_Pa) == pytest.approx(1.0 + band["pressure"].value)
     assert design.T_discharge_K.high - design.T_discharge_K.low == pytest.approx(2.0 * band["T_discharge"].value)
-    assert middle(design.current_A) == pytest.approx(result.candidates[0].hardware_numbers.current_A.new, rel=1e-6)
+    assert middle(design.current_A) == pytest.approx(entry.hardware_numbers.current_A.new, rel=1e-6)
+
+
+@pytest.mark.parametrize(
+    ("key", "half", "reading"),
+    [("duty.condensing", 2.0, "p_cond_Pa"), ("compressor.isentropic_efficiency", 0.05, "T_discharge_K")],
+)
+def test_a_window_is_as_wide_as_what_its_inputs_do(case_with, key, half, reading):
+    """One input within plus or minus h, rectangular: 10 and 90 % of its draws lie 0.8 h below and above it.
+
+    There the plant is computed as a case of its own. Band and input are added in quadrature. Latin hypercube of 200
+    draws puts a percentile within 1/200 of its place.
+    """
+    table, name = key.split(".")
+    usual = {"duty": {"condensing": 42.0}, "compressor": {"isentropic_efficiency": 0.70}}[table][name]
+    unit = " degC" if table == "duty" else None
+    tables = {"plant": PLANT, **EXCHANGERS}
+    design = windows(exact(case_with(**tables), **{key: half}))[1]
+    band = model_band()["pressure" if reading.startswith("p") else "T_discharge"].value
+    full = {}
+    for share in (-0.8, 0.0, 0.8):
+        value = usual + share * half
+        own = {**tables, table: {**tables.get(table, {}), name: f"{value}{unit}" if unit else value}}
+        full[share] = getattr(windows(exact(case_with(**own)))[0].plant.full, reading)
+    half_band = band * full[0.0] if reading.startswith("p") else band
+    low, high = (math.hypot(full[0.0] - full[end], half_band) for end in sorted((-0.8, 0.8), key=full.get))
+    window = getattr(design, reading)
+
+    assert full[0.0] - window.low == pytest.approx(low, rel=0.01)
+    assert window.high - full[0.0] == pytest.approx(high, rel=0.01)
+    assert window.high - window.low > 2.05 * half_band
+
+
+def test_windows_of_a_usual_plant_are_wider_than_the_model_alone(usual):
+    """A kelvin of condensing temperature is about 2.4 % of its pressure: 2 % of the model cannot be all."""
+    design = next(item for item in usual[1].expected if item.name == "design")
+    full = usual[0].candidates[0].plant.full
+
+    assert design.p_cond_Pa.high / full.p_cond_Pa > 1.025
+    assert design.p_cond_Pa.low / full.p_cond_Pa < 0.975
+    assert design.power_W.low < full.power_W < design.power_W.high
 
 
 def test_a_control_of_head_pressure_holds_the_mild_day_up(change):

@@ -291,7 +291,9 @@ def test_what_is_missing_is_named(case_with, path, number, word):
     """A key left out leaves its number unknown and stands in the reason."""
     found = of(case_with, *path)
 
-    assert f"`{word}`" in {**found.missing, **found.new.missing}[number]
+    gap = {**found.missing, **found.new.missing}[number]
+    assert f"`{word}`" in gap.words
+    assert any(key.rpartition(".")[2] == word for key in gap.keys)
 
 
 def test_nothing_given_leaves_everything_unknown(case_with):
@@ -306,12 +308,30 @@ def test_nothing_given_leaves_everything_unknown(case_with):
 
 @pytest.mark.parametrize("medium", ["water", "brine"])
 def test_the_hottest_air_says_nothing_on_a_condenser_cooled_by_water(case_with, medium):
-    """Its highest temperature is not in the case, and the reason says so."""
+    """Its highest temperature is not in the case, the reason says so and names its key; given, it is computed."""
     tables = {**FULL, "condenser": {**FULL["condenser"], "medium": medium}}
     found = compare(case_with("R134a", ["R1234yf"], **tables)).candidates[0].hardware_numbers.new
 
     assert found.hottest is None
-    assert medium in found.missing["hottest"]
+    assert medium in found.missing["hottest"].words
+    assert found.missing["hottest"].keys == ("condenser.highest_inlet",)
+
+    tables["condenser"]["highest_inlet"] = "33 degC"  # 3 K above that of the duty
+    given = compare(case_with("R134a", ["R1234yf"], **tables)).candidates[0]
+
+    assert given.hardware_numbers.new.hottest.p_cond_Pa > given.duty.p_cond_Pa
+    assert not given.hardware_numbers.new.missing["hottest"]
+
+
+def test_a_highest_inlet_of_air_goes_before_the_hottest_air_around(case_with):
+    """The air that a condenser draws while it runs may be cooler than the hottest around the plant at rest."""
+    own = {**FULL["condenser"], "highest_inlet": FULL["plant"]["highest_ambient"]}
+    same, around = (
+        compare(case_with("R134a", ["R1234yf"], **{**FULL, "condenser": condenser})).candidates[0].hardware_numbers
+        for condenser in (own, FULL["condenser"])
+    )
+
+    assert same.new.hottest == around.new.hottest
 
 
 def test_a_current_read_at_part_load_is_not_used(case_with):
@@ -320,7 +340,7 @@ def test_a_current_read_at_part_load_is_not_used(case_with):
     found = compare(case_with("R134a", ["R1234yf"], **tables)).candidates[0].hardware_numbers
 
     assert found.current_A.new is None
-    assert "60% load" in found.missing["current"]
+    assert "60% load" in found.missing["current"].words
 
 
 @pytest.mark.parametrize("key", ["length", "lowest_load"])
@@ -339,7 +359,7 @@ def test_above_the_critical_temperature_there_is_no_standstill_pressure(case_wit
     found = compare(case_with("R23", ["R23"], **tables)).existing.hardware_numbers.new
 
     assert found.p_standstill_Pa is None
-    assert "no liquid at 43 °C" in found.missing["standstill"]
+    assert "no liquid at 43 °C" in found.missing["standstill"].words
 
 
 def test_where_the_hot_day_has_no_solution_the_reason_says_so(case_with):
@@ -348,7 +368,7 @@ def test_where_the_hot_day_has_no_solution_the_reason_says_so(case_with):
     found = compare(case_with("R404A", ["R448A"], **tables)).existing.hardware_numbers.new
 
     assert found.hottest is None
-    assert "critical temperature of R404A" in found.missing["hottest"]
+    assert "critical temperature of R404A" in found.missing["hottest"].words
 
 
 def test_a_day_on_which_todays_plant_does_not_run_counts_at_standstill_only(case_with):
@@ -357,5 +377,5 @@ def test_a_day_on_which_todays_plant_does_not_run_counts_at_standstill_only(case
     found = compare(case_with("R404A", ["R452A"], **tables)).candidates[0].hardware_numbers.new
 
     assert found.hottest is None
-    assert "standstill only" in found.missing["hottest"]
+    assert "standstill only" in found.missing["hottest"].words
     assert found.p_standstill_Pa > 28e5

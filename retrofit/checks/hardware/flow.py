@@ -4,12 +4,14 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
-from retrofit.case import GasLine, LiquidLine
-from retrofit.checks.hardware.rows import Bound, Matter, View, judged, stated
+from retrofit.case import FIXED, GasLine, LiquidLine
+from retrofit.checks.hardware.rows import Bound, Matter, View, answered, judged, stated
 from retrofit.study import Component, Measure
+from retrofit.study.gaps import KNOWN, Gap, not_given
 from retrofit.study.hardware.numbers import GasFlow, LiquidFlow, Throttling
 from retrofit.units import quantity
 
+BY_CALCULATION = ("approvals.lines",)
 VALVE_ASK = (
     "Maker's capacity with this refrigerant at this pressure difference; whether the charge of the power element "
     "follows its pressure-temperature curve; opening differences of solenoid and check valves."
@@ -19,13 +21,18 @@ VALVE_ASK = (
 def valve(view: View) -> Iterator[Component]:
     """Compare the capacity of the expansion valve, or capillary tube, with the load."""
     found, kind = view.numbers.valve, view.case.valve.kind if view.case.valve else None
-    names = {"capillary": "Capillary tube", "electronic": "Electronic expansion valve"}
+    names = {
+        "capillary": "Capillary tube",
+        "fixed orifice": "Fixed orifice",
+        "electronic": "Electronic expansion valve",
+    }
     code, name = "expansion-valve", names.get(kind or "", "Expansion valve")
     if found is None:
         matter = Matter(code, name, "The opening cannot be compared.", ask=VALVE_ASK)
-        yield stated(matter, "unknown", ["no pressure is left over the valve, or its state lies outside the model"])
+        gap = Gap("no pressure is left over the valve, or its state lies outside the model")
+        yield answered(view, matter, "expansion_valve", stated(matter, "unknown", [gap]))
         return
-    first, last = ("capillary_small", "capillary_large") if kind == "capillary" else ("valve_small", "valve_large")
+    first, last = ("capillary_small", "capillary_large") if kind in FIXED else ("valve_small", "valve_large")
     bounds = Bound(view.limits[first], "below"), Bound(view.limits[last])
     fact = (
         f"The same opening passes {found.capacity_ratio:.2f} times today's cooling where {found.load_ratio:.2f} times "
@@ -36,7 +43,7 @@ def valve(view: View) -> Iterator[Component]:
     if view.is_today:
         yield stated(matter, "keep")
     elif kind is None and "stop" not in levels:
-        yield stated(matter, "unknown", ["`kind` in [valve] is not given"])
+        yield stated(matter, "unknown", [not_given("valve.kind")])
     else:
         yield stated(matter, _valve_verdict(kind, levels))
 
@@ -79,7 +86,7 @@ def distributor(view: View) -> Iterator[Component]:
     )
     ask = "Nominal loading of nozzle and tubes; the nozzle for this refrigerant."
     matter = Matter("distributor", "Distributor", fact, measures, bounds, ask)
-    gaps = ["`evaporator` in [plant] is not given"] if feed is None else []
+    gaps = [not_given("plant.evaporator")] if feed is None else []
     yield judged(matter, [bound.level(found.mass_flow_ratio) for bound in bounds], gaps)
 
 
@@ -117,7 +124,7 @@ def _gas_line(view: View, line: str) -> Iterator[Component]:
     name = f"{line.capitalize()} line"
     ask = "Inside diameter, length and bends of the line as built."
     if new is None or table is None:
-        yield judged(Matter(f"{line}-line", name, "", measures, bounds, ask), [], [_no_line(line, table)])
+        yield _with_friction(view, Matter(f"{line}-line", name, "", measures, bounds, ask), [], [_no_line(line, table)])
         return
     fact = quantity("velocity", new.velocity_m_per_s, ".1f")
     if new.saturation_drop_K is not None and new.pressure_drop_Pa is not None:
@@ -126,7 +133,7 @@ def _gas_line(view: View, line: str) -> Iterator[Component]:
     levels = [bounds[0].level(new.velocity_m_per_s), bounds[1].level(new.velocity_m_per_s)]
     levels.append(bounds[2].level(new.saturation_drop_K))
     matter = Matter(f"{line}-line", name, f"{fact}.", measures, bounds, ask)
-    yield judged(matter, levels, [_no_friction(view, line, table, new.pressure_drop_Pa)])
+    yield _with_friction(view, matter, levels, [_no_friction(view, line, table, new.pressure_drop_Pa)])
 
 
 def _diameter(table: LiquidLine | None) -> tuple[Measure, ...]:
@@ -134,19 +141,27 @@ def _diameter(table: LiquidLine | None) -> tuple[Measure, ...]:
     return (Measure("Inside diameter", "diameter", size, size),)
 
 
-def _no_line(line: str, table: LiquidLine | None) -> str:
+def _no_line(line: str, table: LiquidLine | None) -> Gap:
     if table is None:
-        return f"`diameter` in [lines.{line}] is not given"
-    return f"what flows in the {line} line lies outside the model"
+        return not_given(f"lines.{line}.diameter")
+    return Gap(f"what flows in the {line} line lies outside the model", BY_CALCULATION)
 
 
-def _no_friction(view: View, line: str, table: LiquidLine, drop: float | None) -> str:
-    """Return why the pressure drop of a line is not known, nothing if it is."""
+def _no_friction(view: View, line: str, table: LiquidLine, drop: float | None) -> Gap:
+    """Return why the pressure drop of a line is not known; false if it is."""
     if drop is not None:
-        return ""
+        return KNOWN
     if table.length_m is None:
-        return f"`length` in [lines.{line}] is not given"
-    return f"viscosity of {view.entry.refrigerant.designation} ({view.numbers.new.missing['viscosity'] or 'no value'})"
+        return not_given(f"lines.{line}.length")
+    why = view.numbers.new.missing["viscosity"].words or "no value"
+    return Gap(f"viscosity of {view.entry.refrigerant.designation} ({why})", BY_CALCULATION)
+
+
+def _with_friction(view: View, matter: Matter, levels: list[str | None], gaps: list[Gap]) -> Component:
+    """Return the row of a line; what the model cannot say of it, an engineer's calculation settles."""
+    row = judged(matter, levels, gaps)
+    is_by_calculation = any(gap.keys == BY_CALCULATION for gap in gaps)
+    return answered(view, matter, "lines", row) if row.verdict == "unknown" and is_by_calculation else row
 
 
 def suction_riser(view: View) -> Iterator[Component]:
@@ -168,10 +183,11 @@ def _oil_return(view: View, line: str) -> Iterator[Component]:
     is_level = table is not None and table.riser_m == 0.0
     names = ("horizontal_velocity",) if is_level else ("riser_velocity", "riser_flow_reversal", "riser_momentum")
     bounds = tuple(Bound(view.limits[item], "below") for item in names)
-    gaps = [] if table and table.riser_m is not None else [f"`riser` in [lines.{line}] is not given"]
+    gaps = [] if table and table.riser_m is not None else [not_given(f"lines.{line}.riser")]
     if new is None or table is None or new.lowest_velocity_m_per_s is None:
-        gaps.append(f"`lowest_load` in [lines.{line}] is not given" if table else _no_line(line, table))
-        yield judged(Matter(code, name, "", (), bounds, ask), [], gaps)
+        is_load_missing = table is not None and table.lowest_load is None
+        gaps.append(not_given(f"lines.{line}.lowest_load") if is_load_missing else _no_line(line, table))
+        yield _with_friction(view, Matter(code, name, "", (), bounds, ask), [], gaps)
         return
     # What rounding alone makes smaller than today's is today's.
     share = round(new.lowest_momentum_flux_Pa / old.lowest_momentum_flux_Pa, 6)
@@ -209,7 +225,8 @@ def liquid_line(view: View) -> Iterator[Component]:
     )
     ask = "Subcooling before the line; height, drier and solenoid valves of the line."
     if new is None or table is None:
-        yield judged(Matter("liquid-line", "Liquid line", "", measures, bounds, ask), [], [_no_line("liquid", table)])
+        matter = Matter("liquid-line", "Liquid line", "", measures, bounds, ask)
+        yield _with_friction(view, matter, [], [_no_line("liquid", table)])
         return
     fact = quantity("velocity", new.velocity_m_per_s, ".2f")
     if left.new is not None:
@@ -217,11 +234,10 @@ def liquid_line(view: View) -> Iterator[Component]:
     values = (new.velocity_m_per_s, new.saturation_drop_K, left.new)
     levels = [bound.level(value) for bound, value in zip(bounds, values, strict=True)]
     gaps = [_no_friction(view, "liquid", table, new.pressure_drop_Pa)]
-    gaps += ["`riser` in [lines.liquid] is not given"] if table.riser_m is None else []
-    gaps += (
-        ["the subcooling left, for the line takes all of the pressure"] if not any(gaps) and left.new is None else []
-    )
-    yield judged(Matter("liquid-line", "Liquid line", f"{fact}.", measures, bounds, ask), levels, gaps)
+    gaps += [not_given("lines.liquid.riser")] if table.riser_m is None else []
+    if not any(gaps) and left.new is None:
+        gaps.append(Gap("the subcooling left, for the line takes all of the pressure", BY_CALCULATION))
+    yield _with_friction(view, Matter("liquid-line", "Liquid line", f"{fact}.", measures, bounds, ask), levels, gaps)
 
 
 def _liquid_measures(old: LiquidFlow | None, new: LiquidFlow | None) -> tuple[Measure, ...]:

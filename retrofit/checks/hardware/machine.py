@@ -6,9 +6,10 @@ from collections.abc import Iterator
 
 from retrofit.checks.corners import worst
 from retrofit.checks.gates import cooling_reached
-from retrofit.checks.hardware.rows import Bound, Matter, View, judged, performance_measure, stated
+from retrofit.checks.hardware.rows import Bound, Matter, View, answered, judged, performance_measure, stated
 from retrofit.checks.operating import discharge_limit, motor_load
 from retrofit.study import Component, Measure
+from retrofit.study.gaps import not_given
 from retrofit.units import quantity
 
 
@@ -55,7 +56,7 @@ def motor(view: View) -> Iterator[Component]:
     )
     corner = motor_load(view.comparison, view.entry)
     gaps = [numbers.missing["current"], numbers.new.missing["pull_down"]]
-    gaps += ["`rated_current` in [compressor] is not given"] if rated is None else []
+    gaps += [not_given("compressor.rated_current")] if rated is None else []
     ratio = numbers.new.design.power_W / numbers.old.design.power_W
     fact = f"The compressor takes {ratio:.2f} times today's power."
     levels = [Bound(view.limits["motor_power"]).level(ratio)] if corner is None else []
@@ -92,7 +93,8 @@ def envelope(view: View) -> Iterator[Component]:
     fact = "Whether the working points lie in the maker's envelope for this refrigerant is not known here."
     ask = "Written approval and envelope of this compressor with this refrigerant and oil, with date."
     matter = Matter("compressor-envelope", "Compressor, envelope and approval", fact, ask=ask)
-    yield stated(matter, "unknown", source="common practice: each working point lies in the maker's envelope")
+    source = "common practice: each working point lies in the maker's envelope"
+    yield answered(view, matter, "compressor", stated(matter, "unknown", source=source))
 
 
 def condenser(view: View) -> Iterator[Component]:
@@ -129,7 +131,7 @@ def evaporator(view: View) -> Iterator[Component]:
     glide = view.numbers.new.design.glide_evap_K
     measures = (performance_measure(view, "Glide in the evaporator", "temperature difference", "glide_evap_K"),)
     fact = f"{quantity('temperature difference', glide, '.1f')} of glide in {f'a {feed}' if feed else 'an'} evaporator."
-    gaps = ["`evaporator` in [plant] is not given"] if feed is None else []
+    gaps = [not_given("plant.evaporator")] if feed is None else []
     matter = Matter("evaporator", "Evaporator, glide", fact, measures, (bound,))
     yield judged(matter, [view.level("glide")], gaps)
 

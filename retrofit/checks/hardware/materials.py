@@ -4,9 +4,10 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
-from retrofit.checks.hardware.rows import Bound, Matter, View, judged, stated
+from retrofit.checks.hardware.rows import Bound, Matter, View, answered, judged, stated
 from retrofit.refrigerants import Refrigerant, find
 from retrofit.study import Component, Measure
+from retrofit.study.gaps import Gap, not_given
 from retrofit.units import quantity
 
 CHLORINATED = ("CFC", "HCFC", "HCFO", "chloroalkene")
@@ -47,11 +48,18 @@ def receiver(view: View) -> Iterator[Component]:
     """Compare the receiver with the charge pumped down."""
     filling, bound = view.numbers.filling, Bound(view.limits["receiver_fill"])
     name, ask = "Receiver", "How much of the charge is pumped down, and into which vessels."
-    gaps = ["`volume` in [receiver] is not given"] if view.case.receiver is None else []
+    if view.case.receiver is not None and not view.case.receiver.is_there:
+        yield stated(Matter("receiver", name, "The plant has no receiver."), "keep")
+        return
+    gaps = [not_given("receiver.volume")] if view.case.receiver is None else []
     gaps += [view.numbers.missing["filling"]]
     if filling is None or view.case.receiver is None or filling.receiver_share.new is None:
-        gaps += [] if any(gaps) else ["no liquid at that temperature within the model"]
-        yield judged(Matter("receiver", name, "", (), (bound,), ask), [], gaps)
+        matter = Matter("receiver", name, "", (), (bound,), ask)
+        if any(gaps):
+            yield judged(matter, [], gaps)
+        else:
+            no_liquid = judged(matter, [], [Gap("no liquid at that temperature within the model")])
+            yield answered(view, matter, "receiver", no_liquid)
         return
     share = filling.receiver_share
     measures = (Measure("Fill with the whole charge", "fraction", share.old, share.new),)
@@ -71,7 +79,7 @@ def oil(view: View) -> Iterator[Component]:
     level = view.level("oil")
     ask = "Oil, grade and viscosity that the maker asks for; a sample of what is inside; the limit of old oil."
     fact = view.fact("oil", f"Usual {usual.text or 'not stated'}; in the plant {here or 'not stated'}.")
-    gaps = ["the kind of oil, `oil` in [plant]"] if here in (None, "unknown", "mixed") else []
+    gaps = [Gap("the kind of oil, `oil` in [plant]", ("plant.oil",))] if here in (None, "unknown", "mixed") else []
     source = "; ".join(dict.fromkeys((usual.source or "catalogue, which states none", bound.limit.source)))
     if view.is_today:
         matter = Matter("oil", "Compressor oil", f"In the plant {here or 'not stated'}.", (), (), ask)
@@ -79,7 +87,9 @@ def oil(view: View) -> Iterator[Component]:
         return
     measures = (Measure("Old oil left", "fraction", 1.0, left),) if level == "work" else ()
     matter = Matter("oil", "Compressor oil", fact, measures, (bound,), ask)
-    if level != "work":
+    if level == "unknown" and not gaps:  # the catalogue states no usual oil
+        yield answered(view, matter, "oil", judged(matter, [level], gaps, source))
+    elif level != "work":
         yield judged(matter, [level], gaps, source)
     elif left is None:
         yield stated(matter, "replace", [view.numbers.missing["residual_oil"]], source)
@@ -103,7 +113,9 @@ def elastomers(view: View) -> Iterator[Component]:
             "none: change those of receiver, shaft, terminals, valve stems and access valves."
         )
         verdict = "replace"
-    yield stated(Matter("elastomers", "Seals (elastomers)", fact, ask=ask), verdict, source=source)
+    matter = Matter("elastomers", "Seals (elastomers)", fact, ask=ask)
+    row = stated(matter, verdict, source=source)
+    yield answered(view, matter, "seals", row) if verdict == "unknown" else row
 
 
 def drier(view: View) -> Iterator[Component]:
@@ -119,7 +131,7 @@ def metals(view: View) -> Iterator[Component]:
     """Set the metals of the plant against the refrigerant."""
     found, name = view.case.plant.metals, view.entry.refrigerant.designation
     parts = _parts(view.entry.refrigerant)
-    gaps = ["`metals` in [plant] is not given"] if found is None else []
+    gaps = [not_given("plant.metals")] if found is None else []
     ask = f"Every metal that {name} touches, gaskets, bearings and instruments included."
     source = "material texts: no copper or copper alloys with ammonia; care with zinc and with aluminium-magnesium"
 
@@ -136,7 +148,8 @@ def metals(view: View) -> Iterator[Component]:
     elif found is None:
         yield row("", "unknown")
     elif doubtful:
-        yield row(f"Whether {name} attacks {' and '.join(doubtful)} is a question to the maker.", "unknown")
+        doubt = row(f"Whether {name} attacks {' and '.join(doubtful)} is a question to the maker.", "unknown")
+        yield answered(view, Matter("metals", "Metals", f"The plant has {' and '.join(doubtful)}."), "metals", doubt)
     else:
         yield row(f"Nothing is known against {', '.join(here)}.", "keep")
 
@@ -153,7 +166,7 @@ def controller(view: View) -> Iterator[Component]:
     fact, verdict = facts.get(kind or "", ("", "unknown"))
     if view.is_today and kind is not None:
         fact, verdict = "The software knows today's refrigerant.", "keep"
-    gaps = ["`controller` in [plant] is not given"] if kind is None else []
+    gaps = [not_given("plant.controller")] if kind is None else []
     matter = Matter("controller", "Controller software", fact, ask=ask)
     yield stated(matter, verdict, gaps, "notices of makers on changed refrigerants; common practice")
 

@@ -5,11 +5,13 @@ from __future__ import annotations
 import math
 from collections.abc import Iterator
 
-from retrofit.checks.at_rest import ABOVE_PLATE
+from retrofit.case import ABSENT, present
+from retrofit.checks.at_rest import ABOVE_PLATE, NO_RELIEF
 from retrofit.checks.corners import conditions, worst
 from retrofit.checks.gauge import share_text, times_below
-from retrofit.checks.hardware.rows import Bound, Matter, View, judged, performance_measure, stated
+from retrofit.checks.hardware.rows import Bound, Matter, View, answered, judged, performance_measure, stated
 from retrofit.study import Component, Measure
+from retrofit.study.gaps import Gap, not_given
 from retrofit.study.hardware.numbers import OldNew
 from retrofit.units import quantity
 
@@ -40,7 +42,7 @@ def high_side(view: View) -> Iterator[Component]:
     fact = "It does not condense" if highest is None else f"Condensing reaches {_gauge(view, highest)}"
     share = view.share(highest, plate)
     if plate is None:
-        missing.insert(0, "`high_side_limit` in [plant] is not given")
+        missing.insert(0, not_given("plant.high_side_limit"))
     elif share is not None:
         fact += f", {share_text(share)} of the nameplate pressure"
     measures = (*_condensing(view), view.pressures("Nameplate of the high side", OldNew(plate, plate)))
@@ -55,17 +57,23 @@ def high_side(view: View) -> Iterator[Component]:
 
 def switch(view: View) -> Iterator[Component]:
     """Compare the high-pressure switch, which stays with the vessel, with nameplate and hottest day."""
-    cut_out = view.case.controls.high_pressure_cut_out_Pa if view.case.controls else None
+    given = view.case.controls.high_pressure_cut_out_Pa if view.case.controls else None
+    cut_out = present(given)
     plate, highest = view.case.plant.high_side_limit_Pa, _highest(view)
     assert highest is not None, "asked for solved refrigerants only"
     bounds = Bound(view.limits["switch_setting"]), Bound(view.limits["switch_margin"])
     ask = "Range of the switch; which setting the vessel, not the refrigerant, allows."
     measures = (view.pressures("Cut-out", OldNew(cut_out, cut_out)), *_condensing(view))
-    gaps = [] if plate is not None else ["`high_side_limit` in [plant] is not given"]
+    gaps: list[Gap] = [] if plate is not None else [not_given("plant.high_side_limit")]
+    if given is ABSENT:
+        fact = "The plant has no high-pressure switch: whether it needs one with this refrigerant is to be proven."
+        matter = Matter("high-pressure-switch", "High-pressure switch", fact, measures, bounds, ask)
+        yield stated(matter, "keep" if view.is_today else "adjust")
+        return
     share = view.share(highest, cut_out)
     if cut_out is None or share is None:
         matter = Matter("high-pressure-switch", "High-pressure switch", "", measures, bounds, ask)
-        yield judged(matter, [], ["`high_pressure_cut_out` in [controls] is not given"])
+        yield judged(matter, [], [not_given("controls.high_pressure_cut_out")])
         return
     levels = [bounds[1].level(share)]
     fact = f"Condensing reaches {_gauge(view, highest)}, {share_text(share)} of the cut-out at {_gauge(view, cut_out)}"
@@ -82,7 +90,8 @@ def switch(view: View) -> Iterator[Component]:
 
 def relief(view: View) -> Iterator[Component]:
     """Compare the relief valve of the high side with the highest pressure in operation and at rest."""
-    setting, rest = view.case.plant.relief_setting_Pa, _rest(view).new
+    given = view.case.plant.relief_setting_Pa
+    setting, rest = present(given), _rest(view).new
     plate, operating = view.case.plant.high_side_limit_Pa, _highest(view)
     bounds = Bound(view.limits["relief_margin"], "below"), Bound(view.limits["relief_seep"])
     measures = (
@@ -91,9 +100,13 @@ def relief(view: View) -> Iterator[Component]:
         _at_rest(view),
     )
     ask = "Setting, capacity and date of the relief valve; whether its material suits the refrigerant."
+    if given is ABSENT:
+        matter = Matter("relief", "Relief valve, setting", NO_RELIEF, measures, bounds, ask)
+        yield stated(matter, "keep" if view.is_today else "adjust")
+        return
     if setting is None:
         matter = Matter("relief", "Relief valve, setting", "", measures, bounds, ask)
-        yield judged(matter, [], ["`relief_setting` in [plant] is not given"])
+        yield judged(matter, [], [not_given("plant.relief_setting")])
         return
     levels, fact = [view.level("relief")], f"It opens at {_gauge(view, setting)}"
     share, at_rest, of_plate = view.share(operating, setting), view.share(rest, setting), view.share(setting, plate)
@@ -109,7 +122,7 @@ def relief(view: View) -> Iterator[Component]:
         fact += f"; it is set above the nameplate's {_gauge(view, plate)}"
     gaps = [view.gap(name) for name in ("hottest", "standstill")]
     if plate is None:
-        gaps.append("`high_side_limit` in [plant] is not given")
+        gaps.append(not_given("plant.high_side_limit"))
     matter = Matter("relief", "Relief valve, setting", f"{fact}.", measures, bounds, ask)
     yield judged(matter, levels, gaps)
 
@@ -118,10 +131,14 @@ def relief_capacity(view: View) -> Iterator[Component]:
     """Say that the capacity of the relief valve has to be reckoned again for another refrigerant."""
     if view.is_today:
         return
-    fact = "The flow that has to be let off differs between refrigerants, and the case does not give the valve's."
+    name, source = "Relief valve, capacity", "ASHRAE 15 and EN 13136: capacity depends on the refrigerant (from memory)"
+    if view.case.plant.relief_setting_Pa is ABSENT:
+        yield stated(Matter("relief-capacity", name, "The plant has no relief valve."), "keep", source=source)
+        return
+    fact = "The flow that has to be let off differs between refrigerants."
     ask = "Required flow by the standard that applies (its factor for this refrigerant), against the flow stamped."
-    matter = Matter("relief-capacity", "Relief valve, capacity", fact, ask=ask)
-    yield stated(matter, "unknown", source="ASHRAE 15 and EN 13136: capacity depends on the refrigerant (from memory)")
+    matter = Matter("relief-capacity", name, fact, ask=ask)
+    yield answered(view, matter, "relief_capacity", stated(matter, "unknown", source=source))
 
 
 def _at_rest(view: View) -> Measure:
@@ -144,7 +161,7 @@ def standstill(view: View) -> Iterator[Component]:
         view.pressures("Nameplate of the high side", OldNew(high, high)),
     )
     gaps = [view.gap("standstill")]
-    gaps += ["`low_side_limit` in [plant] is not given"] if low is None else []
+    gaps += [not_given("plant.low_side_limit")] if low is None else []
     share = view.share(rest, weakest)
     fact = ""
     if rest is not None:

@@ -3,14 +3,17 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from retrofit.case import Case
 from retrofit.checks.gauge import share_of_limit
 from retrofit.checks.thresholds import Threshold
 from retrofit.study import Comparison, Component, Entry, Finding, Measure
+from retrofit.study.gaps import Gap
+from retrofit.study.hardware.conditions import CANDIDATES
 from retrofit.study.hardware.numbers import HardwareNumbers, OldNew
 
+ANSWERED = {True: "Approved in writing, by the case.", False: "Not approved, by the case."}
 VERDICTS: Mapping[str | None, str] = {"stop": "replace", "work": "adjust", "note": "keep", None: "keep"}
 PHYSICS = "physics"
 
@@ -47,10 +50,21 @@ class View:
         """Return whether this is the refrigerant in the plant."""
         return self.entry is self.comparison.existing
 
-    def gap(self, name: str) -> str:
-        """Return why a number of the new refrigerant is not known, in words; empty if it is."""
+    def gap(self, name: str) -> Gap:
+        """Return what a number of the new refrigerant is wanting for; false if it is known."""
         numbers = self.entry.hardware_numbers
-        return numbers.new.missing[name] if numbers else f"{self.entry.refrigerant.designation} is not computed"
+        if numbers:
+            return numbers.new.missing[name]
+        return Gap(f"{self.entry.refrigerant.designation} is not computed", (CANDIDATES,))
+
+    def answered(self, name: str) -> bool | None:
+        """Return the answer in writing that the case holds for this refrigerant; None if it holds none.
+
+        Args:
+            name: A key of [approvals].
+        """
+        approvals = self.case.approvals
+        return approvals.of(name, self.entry.refrigerant.designation) if approvals else None
 
     def level(self, code: str) -> str | None:
         """Return the level of the gates' finding with a code, None if they found nothing."""
@@ -128,13 +142,13 @@ class Matter:
     words: str = "no number: a matter of material or approval"
 
 
-def judged(matter: Matter, levels: Iterable[str | None], missing: Iterable[str] = (), source: str = "") -> Component:
+def judged(matter: Matter, levels: Iterable[str | None], missing: Iterable[Gap] = (), source: str = "") -> Component:
     """Return a row: its worst level decides, then what is missing, and only then is there nothing to do.
 
     Args:
         matter: What the row is about.
         levels: Levels found.
-        missing: What is not known, each in words; empty ones do not count.
+        missing: What is not known; false ones do not count.
         source: Where the threshold comes from, if no bound says so.
     """
     found, gaps = set(levels), [gap for gap in missing if gap]
@@ -143,9 +157,10 @@ def judged(matter: Matter, levels: Iterable[str | None], missing: Iterable[str] 
     return stated(matter, verdict, gaps, source)
 
 
-def stated(matter: Matter, verdict: str, missing: Sequence[str] = (), source: str = "") -> Component:
+def stated(matter: Matter, verdict: str, missing: Sequence[Gap] = (), source: str = "") -> Component:
     """Return a row with a verdict that is already known; arguments as for `judged`."""
-    gaps = f"Not known: {'; '.join(dict.fromkeys(missing))}." if missing else ""
+    words = dict.fromkeys(gap.words for gap in missing if gap)
+    gaps = f"Not known: {'; '.join(words)}." if words else ""
     sources = dict.fromkeys(bound.limit.source for bound in matter.bounds)
     return Component(
         code=matter.code,
@@ -156,7 +171,24 @@ def stated(matter: Matter, verdict: str, missing: Sequence[str] = (), source: st
         threshold="; ".join(bound.text for bound in matter.bounds) or matter.words,
         source=source or "; ".join(sources) or PHYSICS,
         ask=matter.ask,
+        missing=tuple(dict.fromkeys(key for gap in missing for key in gap.keys)),
     )
+
+
+def answered(view: View, matter: Matter, name: str, otherwise: Component) -> Component:
+    """Return a row as the answer of a maker or engineer settles it; the row as it is without an answer.
+
+    Args:
+        view: What the row looks at.
+        matter: What the row is about.
+        name: A key of [approvals].
+        otherwise: The row without an answer.
+    """
+    answer = view.answered(name)
+    if answer is None:
+        return replace(otherwise, missing=tuple(dict.fromkeys((*otherwise.missing, f"approvals.{name}"))))
+    told = replace(matter, fact=f"{matter.fact} {ANSWERED[answer]}".strip())
+    return stated(told, "keep" if answer else "replace", source="answer in writing, by the case")
 
 
 def performance_measure(view: View, name: str, kind: str, quantity: str, condition: str = "design") -> Measure:

@@ -6,6 +6,7 @@ from collections.abc import Iterator
 
 from retrofit.checks.hardware.rows import Bound, Matter, View, stated
 from retrofit.study import Component, Measure
+from retrofit.study.gaps import Gap, not_given
 from retrofit.study.hardware.numbers import Setting
 from retrofit.study.hardware.settings import SET_POINTS
 from retrofit.units import quantity
@@ -24,12 +25,12 @@ def settings(view: View) -> Iterator[Component]:
     steps = [item for item in given if item.key == "fan_steps"]
     for item in given:
         yield _row(view, item, steps.index(item) + 1 if item in steps else 0)
-    known = {item.key for item in given}
-    absent = [f"`{key}`" for key in (*(key for key, _, _ in SET_POINTS), "fan_steps") if key not in known]
+    controls = view.case.controls
+    keys = (*(key for key, _, _ in SET_POINTS), "fan_steps")
+    absent = [f"controls.{key}" for key in keys if controls is None or getattr(controls, f"{key}_Pa") is None]
     if absent:
-        gap = f"{', '.join(absent)} in [controls] not given"
         ask = "Every pressure setting of the plant, read before the change."
-        yield stated(Matter("set-points", "Other set points", "", ask=ask), "unknown", [gap], SOURCE)
+        yield stated(Matter("set-points", "Other set points", "", ask=ask), "unknown", [not_given(*absent)], SOURCE)
 
 
 def _row(view: View, item: Setting, step: int) -> Component:
@@ -41,7 +42,12 @@ def _row(view: View, item: Setting, step: int) -> Component:
     )
     code = f"set-point-{item.key.replace('_', '-')}" + (f"-{step}" if step else "")
     if old is None or new is None:
-        return stated(Matter(code, item.name, "", measures, (bound,)), "unknown", [item.reason], SOURCE)
+        return stated(
+            Matter(code, item.name, "", measures, (bound,)),
+            "unknown",
+            [Gap(item.reason, (f"controls.{item.key}",))],
+            SOURCE,
+        )
     before, after = (quantity("gauge pressure", p_Pa, ".2f") for p_Pa in (old, new))
     fact = f"{before} becomes {after} at {HELD[item.held]}."
     verdict = "adjust" if bound.level_of(abs(new - old)) else "keep"

@@ -72,7 +72,7 @@ def _above(room: RoomCheck, is_existing: bool) -> Finding:
         "work" if is_existing else "stop",
         "Charge above what a room of this kind may take",
         f"{_charge(room)}, against {mass_told(limit.limit_kg)} by {limit.title[0].lower()}{limit.title[1:]} "
-        f"({limit.code_family}), decided by {limit.decided_by}.",
+        f"({limit.code_family}), set by the {limit.decided_by}.",
         "Ask what the plant was approved under. " + DEFERS
         if is_existing
         else f"Less charge in a circuit, a machinery room, or another refrigerant; ask for the measures. {DEFERS}",

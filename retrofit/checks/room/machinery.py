@@ -76,7 +76,7 @@ def machinery_questions(
         found.append(_ventilation_ashrae(refrigerant, room, charge_kg))
     if set(families) & {"EN 378", "ISO 5149"}:
         found.append(_ventilation_en378(room, charge_kg))
-    detection = _levels(refrigerant, room, charge_kg, families) or _detection(refrigerant, room)
+    detection = _levels(refrigerant, room, charge_kg, families) or _detection(refrigerant, room, families)
     found += [_normal_ventilation(room), *detection, *_relief(), *_own(refrigerant, charge_kg)]
     return (*found, _standstill(refrigerant, p_standstill_Pa))
 
@@ -173,7 +173,7 @@ def _fitted(room: MachineryRoom) -> tuple[tuple[str, ...], str]:
     return (), " One is fitted." if room.detector else " None is fitted."
 
 
-def _detection(refrigerant: Refrigerant, room: MachineryRoom) -> list[Question]:
+def _detection(refrigerant: Refrigerant, room: MachineryRoom, families: tuple[str, ...]) -> list[Question]:
     fitted, stands = _fitted(room)
     found = []
     parsed = class_of(refrigerant)
@@ -198,7 +198,8 @@ def _detection(refrigerant: Refrigerant, room: MachineryRoom) -> list[Question]:
             )
         )
     found.append(_exposure(refrigerant, fitted, stands))
-    found.append(_half_atel(refrigerant, fitted))
+    if set(families) & {"EN 378", "ISO 5149"}:
+        found.append(_half_atel(refrigerant, fitted))
     return found
 
 

@@ -12,12 +12,16 @@ from retrofit.cycle import Cycle, Settings, Temperatures, compressor_pressures, 
 from retrofit.equipment.vessels import standstill
 from retrofit.errors import NoSolutionError, OutsideValidRangeError
 from retrofit.properties import Fluid
+from retrofit.study.gaps import KNOWN, Gap, not_given
 from retrofit.study.hardware.lines import number
 from retrofit.study.installed import EfficiencyModel, ExistingPlant
 from retrofit.study.performance import as_numbers, at_swept_volume, performance
 from retrofit.study.result import AtRest, Installed, Performance
 from retrofit.study.states import RestState
 from retrofit.units import ZERO_C_K
+
+HIGHEST_INLET, HIGHEST_SUCTION = "condenser.highest_inlet", "compressor.highest_suction"
+CANDIDATES = "compare.candidates"  # what a model cannot say no other key can: compute it elsewhere, or leave it out
 
 
 @dataclass(frozen=True)
@@ -46,7 +50,7 @@ class Found:
     """A condition, or why it is not known."""
 
     performance: Performance[float] | None
-    reason: str = ""
+    reason: Gap = KNOWN
 
 
 def cycle_between(
@@ -77,10 +81,9 @@ def hottest_day(site: Site, behaviour: Fluid, installed: Installed | None) -> Fo
         installed: What the plant as installed does with it, run with the inlet of the hottest day; None to take
             the temperatures held equal.
     """
-    reason = _no_hottest_day(site.case)
-    inlet_K = hottest_inlet_K(site.case)
-    if reason or inlet_K is None:
-        return Found(None, reason)
+    keys, inlet_K = hottest_day_keys(site.case), hottest_inlet_K(site.case)
+    if inlet_K is None:
+        return Found(None, _not_given_together(keys, site.case))
     try:
         if installed is None:
             assert site.case.condenser
@@ -90,7 +93,8 @@ def hottest_day(site: Site, behaviour: Fluid, installed: Installed | None) -> Fo
             raise NoSolutionError(f"{behaviour.designation} in the plant as installed: {installed.hottest_reason}")
         return Found(installed.hottest)
     except (NoSolutionError, OutsideValidRangeError) as error:
-        return Found(None, f"with {inlet_K - ZERO_C_K:.0f} °C at the condenser there is no solution: {error.message}")
+        words = f"with {inlet_K - ZERO_C_K:.0f} °C at the condenser there is no solution: {error.message}"
+        return Found(None, Gap(words, (HIGHEST_INLET,)))
 
 
 def hottest_inlet_K(case: Case) -> float | None:
@@ -99,22 +103,38 @@ def hottest_inlet_K(case: Case) -> float | None:
     Args:
         case: The case.
     """
-    if _no_hottest_day(case) or case.condenser is None:
+    if case.condenser is None or hottest_day_keys(case):
         return None
-    return max(case.condenser.inlet_K or 0.0, case.plant.highest_ambient_K or 0.0)
+    own, ambient = case.condenser.highest_inlet_K, case.plant.highest_ambient_K
+    return own if own is not None else max(case.condenser.inlet_K or 0.0, ambient or 0.0)
 
 
-def _no_hottest_day(case: Case) -> str:
-    """Return which key the hottest day needs, or nothing."""
-    if case.plant.highest_ambient_K is None:
-        return "`highest_ambient` in [plant] is not given"
-    if case.condenser is None or case.condenser.inlet_K is None:
-        return "`inlet` in [condenser] is not given"
-    if case.condenser.medium is None:
-        return "`medium` in [condenser] is not given"
-    if case.condenser.medium != "air":
-        return f"the condenser is cooled by {case.condenser.medium}, whose highest temperature the case does not give"
-    return ""
+def hottest_day_keys(case: Case) -> tuple[str, ...]:
+    """Return the keys that the hottest day needs and the case does not give.
+
+    The condenser draws air as hot as the hottest around the plant, unless the case says how hot what it draws becomes;
+    of water and brine nothing else says so.
+
+    Args:
+        case: The case.
+    """
+    condenser, keys = case.condenser, []
+    if condenser is None or condenser.inlet_K is None:
+        keys += ["condenser.inlet", "condenser.outlet", "condenser.arrangement"]  # which the case file wants together
+    if condenser is not None and condenser.highest_inlet_K is not None:
+        return tuple(keys)
+    if condenser is None or condenser.medium is None:
+        keys.append("condenser.medium")
+    elif condenser.medium != "air":
+        return (*keys, HIGHEST_INLET)
+    return ("plant.highest_ambient", *keys) if case.plant.highest_ambient_K is None else tuple(keys)
+
+
+def _not_given_together(keys: tuple[str, ...], case: Case) -> Gap:
+    parts = [not_given(key).words for key in keys]
+    if HIGHEST_INLET in keys and case.condenser is not None:
+        parts[-1] = f"the condenser is cooled by {case.condenser.medium}, and {parts[-1]}"
+    return Gap("; ".join(parts), keys)
 
 
 def _warmer_condensing(site: Site, behaviour: Fluid, by_K: float) -> Performance[float]:
@@ -139,11 +159,11 @@ def pull_down(site: Site, behaviour: Fluid, design: Performance[float]) -> Found
     """
     T_K = site.case.compressor.highest_suction_K
     if T_K is None:
-        return Found(None, "`highest_suction` in [compressor] is not given")
+        return Found(None, not_given(HIGHEST_SUCTION))
     try:
         return Found(_with_own_compressor(site, behaviour, float(behaviour.p_dew(T_K)), design.p_cond_Pa))
     except OutsideValidRangeError as error:
-        return Found(None, f"pull-down is not computed: {error.message}")
+        return Found(None, Gap(f"pull-down is not computed: {error.message}", (HIGHEST_SUCTION,)))
 
 
 def at_rest(case: Case, behaviour: Fluid | None) -> AtRest:
@@ -168,21 +188,7 @@ def at_rest(case: Case, behaviour: Fluid | None) -> AtRest:
     return AtRest(state, p_rest, T_highest, critical, T_cond, p_cond)
 
 
-def hottest_day_keys(case: Case) -> tuple[str, ...]:
-    """Return the keys that the hottest day needs and the case does not give.
-
-    Args:
-        case: The case.
-    """
-    keys = [] if case.plant.highest_ambient_K is not None else ["plant.highest_ambient"]
-    if case.condenser is None or case.condenser.inlet_K is None:
-        keys.append("condenser.inlet")
-    if case.condenser is None or case.condenser.medium is None:
-        keys.append("condenser.medium")
-    return tuple(keys)
-
-
-def standstill_pressure(case: Case, behaviour: Fluid) -> tuple[float | None, str]:
+def standstill_pressure(case: Case, behaviour: Fluid) -> tuple[float | None, Gap]:
     """Return the bubble pressure at the highest ambient temperature, or why it is not known. [Pa]
 
     Args:
@@ -191,11 +197,11 @@ def standstill_pressure(case: Case, behaviour: Fluid) -> tuple[float | None, str
     """
     T_K = case.plant.highest_ambient_K
     if T_K is None:
-        return None, "`highest_ambient` in [plant] is not given"
+        return None, not_given("plant.highest_ambient")
     rest = standstill(behaviour, T_K)
     if np.isfinite(rest.p_Pa):
-        return float(rest.p_Pa), ""
+        return float(rest.p_Pa), KNOWN
     where = f"{T_K - ZERO_C_K:.0f} °C, against a critical temperature of {behaviour.T_critical_K - ZERO_C_K:.0f} °C"
     if rest.is_above_critical:
-        return None, f"no liquid at {where}: charge and volume set the pressure at rest"
-    return None, f"the model has no bubble pressure at {where}"
+        return None, Gap(f"no liquid at {where}: charge and volume set the pressure at rest", (CANDIDATES,))
+    return None, Gap(f"the model has no bubble pressure at {where}", (CANDIDATES,))

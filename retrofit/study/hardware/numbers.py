@@ -6,6 +6,8 @@ from collections.abc import Mapping
 from dataclasses import dataclass, field
 from typing import TYPE_CHECKING
 
+from retrofit.study.gaps import Gap
+
 if TYPE_CHECKING:
     from retrofit.study.result import Performance
 
@@ -70,7 +72,7 @@ class Side:
         liquid_density_kg_per_m3: Before the expansion valve.
         inlet_density_kg_per_m3: Liquid and vapour together after the expansion valve.
         suction, discharge, liquid: The lines.
-        missing: Why a number is not known, by its name.
+        missing: What a number is wanting for, by its name; false where it is known.
     """
 
     refrigerant: str
@@ -84,7 +86,7 @@ class Side:
     suction: GasFlow | None
     discharge: GasFlow | None
     liquid: LiquidFlow | None
-    missing: Mapping[str, str] = field(default_factory=dict)
+    missing: Mapping[str, Gap] = field(default_factory=dict)
 
     @property
     def conditions(self) -> Mapping[str, Performance[float]]:
@@ -174,7 +176,7 @@ class HardwareNumbers:
         subcooling_left_K: Subcooling at the expansion valve, if the condenser gives as much as today.
         residual_oil: Share of old oil after the changes planned.
         settings: The set points that the case gives.
-        missing: Why a number is not known, by its name.
+        missing: What a number is wanting for, by its name; false where it is known.
     """
 
     basis: str
@@ -188,4 +190,4 @@ class HardwareNumbers:
     subcooling_left_K: OldNew
     residual_oil: float | None
     settings: tuple[Setting, ...]
-    missing: Mapping[str, str] = field(default_factory=dict)
+    missing: Mapping[str, Gap] = field(default_factory=dict)

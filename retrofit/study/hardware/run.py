@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Mapping
 from dataclasses import dataclass, replace
 
-from retrofit.case import Case
+from retrofit.case import Case, present
 from retrofit.equipment.oil import residual_oil
 from retrofit.equipment.valve import (
     Distribution,
@@ -16,7 +16,15 @@ from retrofit.equipment.valve import (
 )
 from retrofit.equipment.vessels import charge_estimate, vessel_fill
 from retrofit.properties import Fluid
-from retrofit.study.hardware.conditions import Site, hottest_day, pull_down, standstill_pressure
+from retrofit.study.gaps import KNOWN, Gap, not_given
+from retrofit.study.hardware.conditions import (
+    CANDIDATES,
+    HIGHEST_INLET,
+    Site,
+    hottest_day,
+    pull_down,
+    standstill_pressure,
+)
 from retrofit.study.hardware.lines import discharge_line, liquid_line, number, suction_line
 from retrofit.study.hardware.numbers import (
     Distributing,
@@ -94,10 +102,11 @@ def _comparable(old: Side, new: Side) -> Side:
     """Return a side without a hottest day on which today's plant, which carries its duty, does not run either."""
     if old.hottest is not None or new.hottest is None:
         return new
-    reason = (
+    words = (
         f"{old.refrigerant} has no solution on a day that hot, so that `highest_ambient` in [plant] is taken to hold "
         "at standstill only"
     )
+    reason = Gap(words, (HIGHEST_INLET,))
     return replace(new, hottest=None, missing={**new.missing, "hottest": reason})
 
 
@@ -129,28 +138,29 @@ def _side(site: Site, behaviour: Fluid, entry: Entry, basis: str) -> Side:
             "hottest": hottest.reason,
             "pull_down": highest.reason,
             "standstill": no_rest,
-            "viscosity": "; ".join(behaviour.viscosity_gaps),
+            "viscosity": Gap("; ".join(behaviour.viscosity_gaps), ("approvals.lines",)),
         },
     )
 
 
-def _currents(case: Case, old: Side, new: Side) -> tuple[OldNew, OldNew, str]:
+def _currents(case: Case, old: Side, new: Side) -> tuple[OldNew, OldNew, Gap]:
     """Return motor currents at the design point and at pull-down: the current read, by the ratio of powers.
 
     Source: at equal voltage and power factor current goes with power.
     """
     readings = case.readings
     if readings is None or readings.current_A is None:
-        return OldNew(), OldNew(), "`current` in [readings] is not given"
+        return OldNew(), OldNew(), not_given("readings.current")
     if readings.load is not None and readings.load < FULL_LOAD:
-        return OldNew(), OldNew(), f"the current was read at {readings.load:.0%} load; read it at full load"
+        words = f"the current was read at {readings.load:.0%} load; read it at full load"
+        return OldNew(), OldNew(), Gap(words, ("readings.current", "readings.load"))
     per_watt = readings.current_A / old.design.power_W
 
     def current(found: Performance[float] | None) -> float | None:
         return None if found is None else found.power_W * per_watt
 
     at_design = OldNew(current(old.design), current(new.design))
-    return at_design, OldNew(current(old.pull_down), current(new.pull_down)), ""
+    return at_design, OldNew(current(old.pull_down), current(new.pull_down)), KNOWN
 
 
 def _distributor(old: Side, new: Side) -> Distributing | None:
@@ -214,27 +224,26 @@ def _liquid_loss(case: Case, old: Side, new: Side, scale: float) -> tuple[OldNew
     return OldNew(*lost), ["friction and height of the liquid line"]
 
 
-def _filling(case: Case, old: tuple[Fluid, Side], new: tuple[Fluid, Side]) -> tuple[Filling | None, str]:
+def _filling(case: Case, old: tuple[Fluid, Side], new: tuple[Fluid, Side]) -> tuple[Filling | None, Gap]:
     """Return a first estimate of the charge and how full the receiver is with all of it."""
     charge = case.plant.charge_kg
     densities = old[1].liquid_density_kg_per_m3, new[1].liquid_density_kg_per_m3
     if charge is None:
-        return None, "`charge` in [plant] is not given"
+        return None, not_given("plant.charge")
     if densities[0] is None or densities[1] is None:
-        return None, "the density of the liquid is outside the model"
+        return None, Gap("the density of the liquid is outside the model", (CANDIDATES,))
     found = charge_estimate(charge, densities[0], densities[1])
     T_K = max(case.plant.highest_ambient_K or 0.0, *(side.design.T_cond_bubble_K for side in (old[1], new[1])))
     fill = OldNew(
         _receiver_share(case, old[0], T_K, charge), _receiver_share(case, new[0], T_K, float(found.expected_kg))
     )
     numbers = (float(found.lowest_kg), float(found.expected_kg), float(found.highest_kg))
-    return Filling(charge, *numbers, fill, T_K), ""
+    return Filling(charge, *numbers, fill, T_K), KNOWN
 
 
 def _receiver_share(case: Case, behaviour: Fluid, T_K: float, charge_kg: float) -> float | None:
-    if case.receiver is None:
-        return None
-    return number(vessel_fill(behaviour, T_K, case.receiver.volume_m3, charge_kg, 1.0).share)
+    volume_m3 = present(case.receiver.volume_m3) if case.receiver else None
+    return None if volume_m3 is None else number(vessel_fill(behaviour, T_K, volume_m3, charge_kg, 1.0).share)
 
 
 def _subcooling_left(case: Case, old: Side, new: Side) -> OldNew:
@@ -248,11 +257,11 @@ def _subcooling_left(case: Case, old: Side, new: Side) -> OldNew:
     return OldNew(at_valve, at_valve + needed[0] - needed[1])
 
 
-def _residual_oil(case: Case) -> tuple[float | None, str]:
+def _residual_oil(case: Case) -> tuple[float | None, Gap]:
     plant = case.plant
-    absent = [key for key in ("oil_changes", "oil_left") if getattr(plant, key) is None]
+    absent = [f"plant.{key}" for key in ("oil_changes", "oil_left") if getattr(plant, key) is None]
     if absent:
-        return None, f"{' and '.join(f'`{key}`' for key in absent)} in [plant] not given"
+        return None, not_given(*absent)
     assert plant.oil_left is not None
     assert plant.oil_changes is not None
-    return float(residual_oil(plant.oil_left, plant.oil_changes)), ""
+    return float(residual_oil(plant.oil_left, plant.oil_changes)), KNOWN

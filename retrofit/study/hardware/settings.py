@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from retrofit.case import present
 from retrofit.cycle import Temperatures, matched_pressures
 from retrofit.errors import NoSolutionError, OutsideValidRangeError
 from retrofit.properties import Fluid
@@ -33,10 +34,10 @@ def settings_of(site: Site, old: tuple[Fluid, Performance[float]], new: Fluid) -
     controls = site.case.controls
     if controls is None:
         return ()
-    given = [(key, name, held, getattr(controls, f"{key}_Pa")) for key, name, held in SET_POINTS]
+    given = [(key, name, held, present(getattr(controls, f"{key}_Pa"))) for key, name, held in SET_POINTS]
     steps = enumerate(controls.fan_steps_Pa or (), start=1)
     given += [("fan_steps", f"Condenser fans, step {step}", "mean condensing", p) for step, p in steps]
-    return tuple(_setting(site, old, new, *item) for item in given if item[3] is not None)
+    return tuple(_setting(site, old, new, key, name, held, p) for key, name, held, p in given if p is not None)
 
 
 def _setting(

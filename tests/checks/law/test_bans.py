@@ -266,3 +266,14 @@ def test_a_proposal_is_never_in_force(law_of, in_force):
     assert not in_force(check, "proposal", "2060-01-01")
     assert not law_of("R290", 50.0).rows_on("proposal")
     assert not any(moment.row and moment.row.subject == "proposal" for moment in check.timeline)
+
+
+@pytest.mark.parametrize("jurisdiction", ["EU", "GB"])
+@pytest.mark.parametrize("name", ["R12", "R113", "R114", "R13B1"])
+def test_a_halon_is_barred_like_a_cfc(law_of, in_force, jurisdiction, name):
+    """Annex I of Regulation (EU) 2024/590 lists halons beside CFC; R14 is a PFC and not among them."""
+    found = law_of(name, 50.0, jurisdiction=jurisdiction, is_new_plant=False)
+    other = law_of("R14", 50.0, jurisdiction=jurisdiction, is_new_plant=False)
+
+    assert [row.gas for row in in_force(found, "service ban") if "CFC" in row.text] == ["any"]
+    assert not [row for row in in_force(other, "service ban") if "CFC" in row.text]

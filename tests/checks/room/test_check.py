@@ -232,7 +232,7 @@ def test_a_missing_input_of_the_room_is_unknown_and_named(results, key):
 
     assert (candidate.room.verdict, finding.level) == ("unknown", "unknown")
     assert f"`{key}` in [room]" in finding.fact
-    assert candidate.verdict == Verdict.OPEN
+    assert not candidate.verdict.is_positive
 
 
 def test_a_charge_nobody_knows_is_unknown(results):
@@ -356,8 +356,7 @@ def test_the_stop_on_a_class_says_what_the_place_asks(results, jurisdiction, wor
     (stop,) = [item for item in candidate.findings if item.code == "safety-class"]
 
     assert stop.level == "stop"
-    asked = " ".join((stop.advice, *(item.text for item in candidate.room.change.asked))).lower()
-    assert all(part.lower() in asked for part in ("whole system", "owner and", "authority", "name plate", words))
+    assert all(part in stop.advice for part in ("whole system", "owner and authority", "nameplate", words))
 
 
 @pytest.mark.parametrize(("jurisdiction", "family"), [("EU", "EN 378"), ("GB", "EN 378"), ("US", "ASHRAE 15")])
@@ -385,9 +384,9 @@ def test_conditions_are_work_for_a_candidate(results, location):
 
 def test_keys_that_settle_an_open_limit_are_named(results):
     """100 kg of R513A in 100 m3, access c, and nobody says whether there are exits: that key settles it."""
-    candidate = results("EN 378", access="c", location="I", emergency_exits=None, largest_circuit="100 kg").candidates[
-        0
-    ]
+    (candidate, *_) = results(
+        "EN 378", access="c", location="I", emergency_exits=None, largest_circuit="100 kg"
+    ).candidates
     (finding,) = [item for item in candidate.findings if item.code == "room-charge"]
 
     assert finding.level == "unknown"

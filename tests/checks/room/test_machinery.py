@@ -184,3 +184,11 @@ def test_every_question_is_one_with_a_source(name):
         assert item.source
         assert item.basis in ("read", "memory", "practice", "physics")
         assert (item.value is None) or item.kind
+
+
+def test_a_set_point_of_one_family_is_not_asked_by_another():
+    """Half the ATEL/ODL is of EN 378-3: with ASHRAE 15 alone it is not asked."""
+    american, european = (topic(asked("R134a", families=(family,)), "detection") for family in BOTH)
+
+    assert len(european) == len(american) + 1
+    assert not [item for item in american if "EN 378" in item.text]
