@@ -44,6 +44,8 @@ EQUIVALENT: dict[tuple[str, str, str], str] = {
         "changes_needed",
         "np.log(wanted) / np.log(kept) - 1e-09 -> np.log(wanted) / np.log(kept) - 1.1000000000000001e-09",
     ): _TOLERANCE,
+    ("equipment/compressor.py", "constant", "[1.0, 2.0] -> [1.0, 2.2]"): "where the nodes of a level curve stand",
+    ("equipment/compressor.py", "constant", "[1.0, 2.0] -> [1.1, 2.0]"): "where the nodes of a level curve stand",
     (
         "equipment/compressor.py",
         "shaft_and_electric",
