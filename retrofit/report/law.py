@@ -227,7 +227,9 @@ def _expected(weight: tuple[float, float, float] | None) -> str:
 
 
 def _tonnes(value: float) -> str:
-    """Return a weight of three digits, as the steps of the law need it. [t CO2e]"""
+    """Return a weight of three digits, as the steps of the law need it, and no finer than a kilogram. [t CO2e]"""
+    if value < 0.1:
+        return f"{value:.3f}"
     return format_number(value, 0) if value >= 100.0 else f"{value:#.3g}".rstrip(".")
 
 

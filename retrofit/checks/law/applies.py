@@ -99,6 +99,10 @@ class Plant:
         found: float | None = getattr(self.refrigerant, basis).number
         return found
 
+    def gwp_known(self, basis: str) -> bool:
+        """Say whether there is a GWP on the basis of a law."""
+        return self.gwp(basis) is not None
+
     def co2e_t(self, basis: str) -> Range | None:
         """Return lowest, expected and highest weight of the charge on a basis; None if not known. [t CO2e]"""
         gwp = self.gwp(basis)

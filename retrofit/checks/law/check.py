@@ -125,10 +125,12 @@ def law_for(
         raise ValueError("the case names no jurisdiction; give jurisdiction in [law]")
     plant = Plant.of(case, law, refrigerant, charge_kg, heat_W)
     end = end_of_life(law, on)
-    asked = ((table, row) for table in tables for row in table.rows if is_new_plant or row.subject not in FOR_NEW)
+    every = [(table, row) for table in tables for row in table.rows]
+    asked = ((table, row) for table, row in every if is_new_plant or row.subject not in FOR_NEW)
     read = _rows(plant, asked, (on, end, read_on or on))
     rows = tuple(sorted(read, key=lambda row: (SUBJECTS.index(row.subject), _first(row))))
-    bases = sorted({row.gwp_basis for row in rows} - {"none"})
+    counted = {row.gwp_basis for table, row in every if not (table.is_history or row.ended(on))} - {"none"}
+    bases = sorted({row.gwp_basis for row in rows if row.gwp_basis != "none"} | set(filter(plant.gwp_known, counted)))
     return LawCheck(
         refrigerant=refrigerant.designation,
         jurisdiction=law.jurisdiction,
