@@ -13,6 +13,8 @@ RetrofitError
 ├── MissingPartError          an optional part of the installation is not there
 └── PortError                 the meeting page cannot have its port
 
+StoreWarning: property tables are right, but cannot be kept for the next run.
+
 A message says what is wrong, the value and unit given, what is allowed, and what to do next.
 """
 
@@ -133,3 +135,7 @@ class PortError(RetrofitError):
     """The meeting page cannot have its port."""
 
     slug = "port"
+
+
+class StoreWarning(UserWarning):
+    """Property tables are right, but cannot be kept for the next run."""

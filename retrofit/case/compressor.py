@@ -14,8 +14,9 @@ MOST_POINTS = 50
 _OTHER_WAYS = ("efficiency_points", "polynomial")
 _ORDINARY = WhyDefault("an ordinary value, the same for every refrigerant", unless=_OTHER_WAYS)
 _EFFICIENCY = Quantity(
-    "fraction", "0 %", "100 %", "no machine does better than the ideal one", above_low=True, example="0.70"
-)
+    "fraction", "10 %", "100 %", "below it no plant can run, and no machine does better than the ideal one",
+    example="0.70",
+)  # fmt: skip
 _POINT = PointValue()
 CURRENT = Quantity("current", "0 A", "10 kA", "motors of compressors lie within it", above_low=True)
 VOLTAGE = Quantity("voltage", "1 V", "20 kV", "motors of compressors lie within it")
@@ -92,7 +93,7 @@ class Compressor(Table):
     ] = key("swept_volume", "Swept volume of all compressors at the speed they run.", None)
     motor_efficiency: Annotated[
         float | None,
-        Quantity("fraction", "0 %", "100 %", "no motor gives more than it takes", above_low=True, example="0.92"),
+        Quantity("fraction", "10 %", "100 %", "a motor in use lies within it", example="0.92"),
     ] = key("motor_efficiency", "Shaft power over electrical power.", None)
     heat_loss: Annotated[
         float | None, Quantity("fraction", "0 %", "90 %", "the gas keeps some of the heat", example="5 %")

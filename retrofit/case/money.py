@@ -16,6 +16,8 @@ from retrofit.refrigerants import with_hyphens
 from retrofit.units import described, quoted
 
 LARGEST_SUM = 1e12
+# Signs of currencies in the letters that the charts are drawn with (DejaVu Sans).
+SIGNS = "$¢£¤¥฿₠₡₢₣₤₥₦₧₨₩₪₫€₭₮₯₰₱₲₳₴₵₸₹₺₽"
 
 
 class Range(NamedTuple):
@@ -181,10 +183,39 @@ class Options(Table):
         return self.by_refrigerant.get(designation_of(name))
 
 
+@dataclass(frozen=True)
+class CurrencyValue(FileValue):
+    """How a currency is to be printed: letters and signs that charts have, and nothing that a spreadsheet reckons."""
+
+    def sample(self) -> str:
+        """Return a currency, as text."""
+        return "EUR"
+
+    def read(self, value: object, p_ambient_Pa: float | None = None) -> str:
+        """Return the currency."""
+        text = Text(12).read(value)
+        strange = next((sign for sign in text if not (sign in " ." or sign in SIGNS or _is_letter(sign))), None)
+        if strange is not None or not (text[0] in SIGNS or _is_letter(text[0])):
+            raise QuantityError(
+                f"{quoted(text)} cannot be printed everywhere: {quoted(strange or text[0])} is not a letter, or not a "
+                f'sign of {SIGNS}; write its code of three letters (ISO 4217), as in "{self.sample()}"'
+            )
+        return text
+
+    def json_schema(self) -> dict[str, Any]:
+        """Return the least length."""
+        return {"type": "string", "minLength": 1}
+
+
+def _is_letter(sign: str) -> bool:
+    """Say whether a sign is a letter of the alphabets that charts have: Latin, Greek, Cyrillic."""
+    return sign.isalpha() and (ord(sign) < 0x250 or 0x386 <= ord(sign) <= 0x3CE or 0x400 <= ord(sign) <= 0x45F)
+
+
 class Money(Table):
     """Prices, in a currency that the user names; nothing is converted."""
 
-    currency: Annotated[str, Text(12)] = key("currency", "Currency, as it is to be printed.")
+    currency: Annotated[str, CurrencyValue()] = key("currency", "Currency, as it is to be printed.")
     tariff: _SUM = key("tariff", "Price of a kWh.", None)
     demand_charge: _SUM = key("demand_charge", "Yearly charge for each kW of peak power.", None)
     discount_rate: Annotated[

@@ -104,6 +104,9 @@ class EfficiencyPoint(NamedTuple):
     volumetric_efficiency: float
 
 
+LEAST_EFFICIENCY = 0.1
+
+
 @dataclass(frozen=True)
 class PointValue(FileValue):
     """A list of three numbers: pressure ratio, isentropic and volumetric efficiency."""
@@ -121,8 +124,11 @@ class PointValue(FileValue):
         if not 1.0 < ratio <= 100.0:
             raise QuantityError(f"pressure ratio {ratio:g} is outside what is allowed: above 1 and up to 100")
         for name, found in zip(("isentropic", "volumetric"), efficiencies, strict=True):
-            if not 0.0 < found <= 1.0:
-                raise QuantityError(f"{name} efficiency {found:g} is outside what is allowed: above 0 and up to 1")
+            if not LEAST_EFFICIENCY <= found <= 1.0:
+                raise QuantityError(
+                    f"{name} efficiency {found:g} is outside what is allowed: {LEAST_EFFICIENCY:g} to 1 (below it no "
+                    "plant can run, and no machine does better than the ideal one)"
+                )
         return EfficiencyPoint(ratio, *efficiencies)
 
     def json_schema(self) -> dict[str, Any]:

@@ -2,8 +2,15 @@
 
 from __future__ import annotations
 
+import re
+from collections.abc import Iterable, Iterator
+
+from retrofit.case.model import field_of
 from retrofit.case.schema import SCHEMA_FILE
 
+REMARKS_AT, WIDEST = 32, 118  # columns
+_HEADING = re.compile(r"(?:# |#\| )?\[([\w.]+)\]")
+_KEY = re.compile(r"(?:# |#\| )?(\w+) = [^#]*")
 _TEXT = """\
 #:schema ./{schema}
 # A case: one plant, its duty, and the refrigerants to compare. Change every value to your plant's.
@@ -329,7 +336,21 @@ def new_case_text() -> str:
     Its first line points editors at the schema, which belongs beside it as `case.schema.json`.
     Returns: The text of the file. [-]
     """
-    return _TEXT.format(schema=SCHEMA_FILE)
+    return "\n".join(_explained(_TEXT.format(schema=SCHEMA_FILE).split("\n")))
+
+
+def _explained(lines: Iterable[str]) -> Iterator[str]:
+    """Yield the lines of the file; a key without a remark of its own has the meaning that the model gives it."""
+    table = ""
+    for line in lines:
+        if heading := _HEADING.match(line):
+            table = heading[1]
+        key = _KEY.fullmatch(line)
+        found = field_of(f"{table}.{key[1]}") if key else None
+        meaning = (found[1].description or "").rstrip(".") if found else ""
+        remark = meaning[:1].lower() + meaning[1:] if meaning[1:2].islower() else meaning
+        told = f"{line:<{REMARKS_AT}} # {remark}"
+        yield told if remark and len(told) <= WIDEST else line
 
 
 def is_untouched(text: str) -> bool:

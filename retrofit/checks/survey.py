@@ -11,20 +11,12 @@ from dataclasses import dataclass
 from enum import StrEnum
 
 from retrofit.case import Case, KeyFacts, facts_of
+from retrofit.case.model import field_of
 from retrofit.study import Comparison, Entry, Family, Level
 from retrofit.study.accounts import Account
 from retrofit.study.hardware.conditions import CANDIDATES
 from retrofit.study.life import Life
 
-# Prices of a year's parts, by code, and the keys that they come from.
-PRICES = {
-    "energy": "money.tariff",
-    "demand": "money.demand_charge",
-    "top_up": "money.refrigerant_price",
-    "leak_checks": "money.leak_check",
-    "levy": "money.levy",
-    "service": "money.yearly_service",
-}
 WEATHER, GRID, LEAK, LIFE = "year.weather", "emissions.grid_factor", "emissions.leak_rate", "law.remaining_life"
 
 
@@ -185,16 +177,29 @@ def _law_keys(case: Case) -> tuple[str, ...]:
 
 
 def _of_money(case: Case, account: Account, name: str, year_keys: tuple[str, ...]) -> Iterator[Unknown]:
-    assert case.money is not None
-    if account.first_cost is not None and account.first_cost.total is None:
-        item = "new_plant" if account.plan.family == Family.REPLACE else "labour"
-        yield Unknown(Part.MONEY, name, "first-cost", "First cost", (f"options.{name}.{item}",))
-    for code in account.yearly_cost.missing if account.yearly_cost is not None else ():
-        price = getattr(case.money, PRICES[code].partition(".")[2], None)
-        amount = year_keys if code in ("energy", "demand") else tuple(_charge_keys(account))
-        if code == "leak_checks":
-            amount = ("law.jurisdiction",) if account.plan.law is None else (*_law_keys(case), *amount)
-        keys = (PRICES[code],) if price is None else amount or (PRICES[code],)
-        yield Unknown(Part.MONEY, name, code, f"Yearly cost: {code.replace('_', ' ')}", keys)
+    for kind, sums in (("First cost", account.first_cost), ("Annual cost", account.yearly_cost)):
+        for item in sums.sum.missing if sums is not None else ():
+            given = tuple(_whole(key) for key in item.keys[:1])
+            keys = given or _keys_beside_prices(case, account, item.code, year_keys)
+            label = f"{kind}: {item.code.replace('_', ' ')}"
+            yield Unknown(Part.MONEY, name, f"{kind.lower().replace(' ', '-')}-{item.code}", label, keys)
     if account.tewi.life_years is None:
         yield Unknown(Part.MONEY, name, "life-cost", "Cost over the remaining life", (LIFE,))
+
+
+def _whole(key: str) -> str:
+    """Return a key of the case file: of a price in a table by refrigerant the table, of a year its weather."""
+    if key == "year":
+        return WEATHER
+    return key if field_of(key) is not None else key.rpartition(".")[0]
+
+
+def _keys_beside_prices(case: Case, account: Account, code: str, year_keys: tuple[str, ...]) -> tuple[str, ...]:
+    """Return the keys that an item of money needs whose price is known: of the year, the charge, the leaks or law."""
+    if code in ("energy", "demand"):
+        return year_keys or (CANDIDATES,)
+    charge = tuple(_charge_keys(account))
+    if code == "leak_checks":
+        law = ("law.jurisdiction",) if account.plan.law is None else _law_keys(case)
+        return (*law, *charge) or (CANDIDATES,)
+    return charge or (CANDIDATES,)

@@ -7,18 +7,21 @@ import contextlib
 import importlib
 import io
 import json
+import logging
 import os
 import signal
 import sys
+import warnings
 from collections.abc import Callable, Iterator
 from functools import wraps
 from typing import Any, NoReturn
 
 import click
 
-from retrofit.errors import CaseFileError, RetrofitError
+from retrofit.errors import CaseFileError, RetrofitError, StoreWarning
 
 WIDEST_PROSE = 100
+_QUIET = logging.NullHandler()
 INTERRUPTED = 128 + 2  # by the custom of shells: 128 and the number of the signal
 # What stands for a sign that the encoding of a stream has no place for; a minus must never get lost.
 PLAIN = {
@@ -32,7 +35,9 @@ def guarded(command: Callable[..., None]) -> Callable[..., None]:
 
     @wraps(command)
     def run(*args: Any, **options: Any) -> None:
+        _open_closed_streams()
         _write_plainly_where_needed()
+        _keep_to_our_own_words()
         try:
             command(*args, **options)
         except KeyboardInterrupt:
@@ -64,6 +69,28 @@ def fail(message: str, status: int) -> NoReturn:
 
     click.echo(f"retrofit: {with_hyphens(shown(message, 2000))}", err=True)
     sys.exit(status)
+
+
+def _open_closed_streams() -> None:
+    """Let what goes to a stream that was closed go nowhere; else the next file opened would take its place."""
+    for name in ("stdout", "stderr"):
+        if getattr(sys, name) is None:
+            setattr(sys, name, open(os.devnull, "w", encoding="utf-8"))
+
+
+def _keep_to_our_own_words() -> None:
+    """Show warnings of our own as a line, and none of a library: it would name its files, not what to do."""
+    for library in ("matplotlib", "fontTools"):
+        logging.getLogger(library).addHandler(_QUIET)
+    shown_before = warnings.showwarning
+
+    def show(message: Warning | str, category: type[Warning], *place: Any, **more: Any) -> None:
+        if issubclass(category, StoreWarning):
+            click.echo(f"retrofit: {message}", err=True)
+        elif sys.warnoptions:  # they are asked for
+            shown_before(message, category, *place, **more)
+
+    warnings.showwarning = show
 
 
 def _write_plainly_where_needed() -> None:

@@ -6,9 +6,11 @@ checked first. `grade(fluid, refrigerant)` says how far its model can be trusted
 
 from __future__ import annotations
 
+import warnings
 from collections.abc import Callable
 from pathlib import Path
 
+from retrofit.errors import StoreWarning
 from retrofit.properties.components import mixture_of
 from retrofit.properties.fluid import Fluid, State
 from retrofit.properties.grade import Grade, grade
@@ -17,6 +19,10 @@ from retrofit.properties.store import read_fluid, store_folder, store_path, writ
 __all__ = ["Fluid", "Grade", "State", "fluid", "grade"]
 
 
+NOT_KEPT = (
+    "the property tables cannot be kept in {folder}, so they are built again each time; name a folder that can be "
+    "written in RETROFIT_STORE"
+)
 _loaded: dict[Path, Fluid] = {}
 
 
@@ -39,6 +45,7 @@ def fluid(designation: str, on_build: Callable[[str], None] | None = None) -> Fl
             from retrofit.properties.build import build_fluid
 
             found = build_fluid(mixture)
-            write_fluid(mixture, found, folder)
+            if not write_fluid(mixture, found, folder):
+                warnings.warn(StoreWarning(NOT_KEPT.format(folder=folder)), stacklevel=2)
         _loaded[place] = found
     return _loaded[place]

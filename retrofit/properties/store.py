@@ -14,6 +14,7 @@ import io
 import json
 import os
 import re
+import stat
 import tempfile
 import time
 from functools import cache
@@ -67,8 +68,11 @@ def read_fluid(mixture: Mixture, folder: Path) -> Fluid | None:
         mixture: What the fluid is made of.
         folder: Folder of the store.
     """
+    path = store_path(mixture, folder)
     try:
-        content = store_path(mixture, folder).read_bytes()
+        if not stat.S_ISREG(os.stat(path).st_mode):
+            return None  # a pipe would wait for ever; writing puts a file in its place
+        content = path.read_bytes()
     except OSError:
         return None
     magic, digest, payload = (

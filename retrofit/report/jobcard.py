@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterable
 from dataclasses import dataclass, replace
 
+from retrofit.case.values import NOTHING
 from retrofit.checks.operating import discharge_limit, limit_of
 from retrofit.report.judging import spelled
 from retrofit.study import Comparison, Component, Entry
@@ -302,13 +303,17 @@ def _evacuate(job: Job) -> Made:
     return "Evacuate and hold", True, lines, (), blanks
 
 
+def _sight_glass(job: Job) -> str:
+    return "" if job.comparison.case.plant.sight_glass == NOTHING else "sight glass, "
+
+
 def _charge(job: Job) -> Made:
     unit, share = job.units.label("mass"), span(*(f"{end:.0%}" for end in practice("first_charge").ends))
     first = job.changing.first_charge_kg
     amount = span(*(job.mass(mass) for mass in first)) if first else UNKNOWN
     lines = [
         f"By weight, into the high side of the plant at standstill: {amount} first, {share} of the charge expected. "
-        "Then trim by sight glass, level or subcooling.",
+        f"Then trim by {_sight_glass(job)}level or subcooling.",
     ]
     is_blend = len(job.entry.refrigerant.composition) > 1
     lines.append(

@@ -38,7 +38,9 @@ from retrofit.study.spread import at
 from retrofit.study.sums import ComparisonState, SumState
 from retrofit.units import MISSING, format_number
 
-BAND = "P10 · P50 · P90".replace(" ", "\N{NO-BREAK SPACE}")
+NBSP = "\N{NO-BREAK SPACE}"
+
+BAND = f"P10{NBSP}·{NBSP}P50{NBSP}·{NBSP}P90"
 
 
 @dataclass(frozen=True)

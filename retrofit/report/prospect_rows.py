@@ -64,10 +64,9 @@ class Options:
 
     def unknown(self, option: Prospect, why: str) -> Cell:
         """Return a cell of what is not known, with what is missing in a note if that can be said."""
-        price = f"{option.entry.refrigerant.designation} in `refrigerant_price`"
         own = f"[options.{option.entry.refrigerant.designation}]"
         # So that options that lack the same share a note.
-        told = why.replace(price, "its price, in `refrigerant_price`").replace(own, "its table in [options]")
+        told = why.replace(own, "its table in [options]")
         text = spelled(told)
         marks = (self.notes.mark(shown_name(option), f"unknown: missing {text}"),) if why else ()
         return Cell(UNKNOWN, is_number=False, marks=marks)

@@ -207,13 +207,13 @@ def _why(entry: Entry, check: RoomCheck) -> str:
     said += [nameless(entry, flag) for flag in limit.flags]
     if limit.basis == "memory" and not any("the rule is from memory" in flag for flag in limit.flags):
         said.append("the rule is from memory")
-    return " ".join([*(f"{text[:1].upper()}{text[1:]}." for text in said), instead, missing]).strip()
+    sentences = (*(f"{text[:1].upper()}{text[1:]}." for text in said), instead, missing)
+    return " ".join(text for text in sentences if text)
 
 
 def _instead(check: RoomCheck) -> str:
     """Return which rules set no limit of charge; nothing where every rule sets one."""
-    families = {limit.code_family for limit in check.limits if limit.role == "limit" and limit.unlimited_because}
-    return f"No limit of charge by {' and '.join(sorted(families))}, but conditions." if check.conditions else ""
+    return f"No limit of charge by {' and '.join(check.unlimited)}, but conditions." if check.conditions else ""
 
 
 def condition_lines(comparison: Comparison, units: UnitSystem) -> tuple[tuple[str, tuple[str, ...]], ...]:

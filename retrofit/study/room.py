@@ -5,6 +5,7 @@ Numbers are SI. Texts are for a reader and carry SI units; no word here approves
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 
 BELOW, ABOVE, UNKNOWN, CONDITIONS = "below the limit", "above the limit", "unknown", "under conditions"
@@ -147,3 +148,20 @@ class RoomCheck:
     machinery_room: tuple[Question, ...]
     lists: tuple[ClassList, ...]
     change: ClassChange | None
+
+    @property
+    def unlimited(self) -> tuple[str, ...]:
+        """Code families of which no rule that counts sets a limit of charge. [-]"""
+        return unlimited_families(self.limits)
+
+
+def unlimited_families(limits: Sequence[WorkedLimit]) -> tuple[str, ...]:
+    """Return the code families of which every limit that counts is none.
+
+    Args:
+        limits: Limits of one refrigerant.
+    """
+    counted = [limit for limit in limits if limit.role == "limit"]
+    families = dict.fromkeys(limit.code_family for limit in counted)
+    bound = {limit.code_family for limit in counted if not limit.unlimited_because}
+    return tuple(family for family in families if family not in bound)

@@ -45,6 +45,12 @@ EQUIVALENT: dict[tuple[str, str, str], str] = {
         "np.log(wanted) / np.log(kept) - 1e-09 -> np.log(wanted) / np.log(kept) - 1.1000000000000001e-09",
     ): _TOLERANCE,
     ("study/installed.py", "existing_plant", "-heat -> +heat"): "the capacity rate takes its absolute value",
+    (
+        "study/installed.py",
+        "_exchanger",
+        "Exchanger(1.0, Secondary(table.inlet_K, rate), table.arrangement) -> "
+        "Exchanger(1.1, Secondary(table.inlet_K, rate), table.arrangement)",
+    ): "stands in until the conductance is found, and is replaced",
     ("equipment/polynomial.py", "_even_ln_p", "np.log -> np.log1p"): _ONE_PASCAL,
 }
 

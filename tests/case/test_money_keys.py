@@ -4,7 +4,7 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from retrofit.case.money import Range, RangeValue
+from retrofit.case.money import SIGNS, Range, RangeValue, _is_letter
 from retrofit.errors import QuantityError
 
 START = """\
@@ -102,3 +102,29 @@ def test_three_numbers_are_a_range_if_they_rise(numbers):
     if numbers != sorted(numbers):
         with pytest.raises(QuantityError, match="do not rise"):
             RangeValue().read(numbers)
+
+
+@pytest.mark.parametrize("currency", ["EUR", "€", "US$", "£", "zł", "Kč", "руб.", "₹", "CHF", "kr"])
+def test_a_currency_is_printed_as_it_is_written(case, currency):
+    """Codes, signs and short words of many countries."""
+    assert case(START + f'currency = "{currency}"\n').money.currency == currency
+
+
+@pytest.mark.parametrize("currency", ["=1+2", "+EUR", "-1", "@SUM", "₿", "元", "E|R", "E=R", "1", "\U0001f4b0"])
+def test_a_currency_that_some_page_cannot_print_is_refused(complaints, currency):
+    """A formula in a spreadsheet, or a sign that the letters of the charts lack."""
+    ((_, key, text),) = complaints(START + f'currency = "{currency}"\n')
+
+    assert key == "money.currency"
+    assert "ISO 4217" in text
+
+
+def test_every_letter_of_a_currency_is_in_the_letters_of_the_charts():
+    """The characters that the font's own table has, as the drawing library reads it."""
+    from matplotlib.font_manager import FontProperties, findfont
+    from matplotlib.ft2font import FT2Font
+
+    has = set(FT2Font(findfont(FontProperties(family="DejaVu Sans"))).get_charmap())
+    allowed = {ord(sign) for sign in SIGNS} | {place for place in range(0x3000) if _is_letter(chr(place))}
+
+    assert allowed <= has

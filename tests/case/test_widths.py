@@ -102,7 +102,7 @@ def test_efficiencies_of_a_curve_are_off_by_a_share(case):
         ('duty.subcooling = "10 %"', "duty.subcooling", "is no width"),  # a share of 0 K
         ('plant.high_side_limit = "5 %"', "plant.high_side_limit", "a pressure difference is needed"),
         ('plant.high_side_limit = "1 bar g"', "plant.high_side_limit", "pressure"),
-        ("compressor.isentropic_efficiency = 0.4", "compressor.isentropic_efficiency", "above 0 % and up to 100 %"),
+        ("compressor.isentropic_efficiency = 0.4", "compressor.isentropic_efficiency", "10 % to 100 %"),
         (
             'compressor.swept_volume = "5 %"',
             "compressor.swept_volume",

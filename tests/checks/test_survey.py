@@ -25,7 +25,7 @@ from retrofit.study.life import life_of
 ROOT = Path(__file__).resolve().parents[2]
 CASES = sorted((ROOT / "cases").glob("*.toml"))
 LEAVE_OUT = "compare.candidates"
-MOST_ROUNDS = 5  # a key filled in may open a further one, such as the material of a joint once metals are known
+MOST_ROUNDS = 6  # a key filled in may open a further one, such as the material of a joint once metals are known
 ORDINARY = {
     "plant.relief_setting": "none",
     "plant.metals": ["copper", "steel"],

@@ -206,3 +206,30 @@ def test_headings_are_bold_in_a_terminal_that_wants_it(good):
     assert "\x1b[1mCautions\x1b[0m" in in_a_terminal(("compare", good), NO_COLOR=None)
     assert "\x1b" not in in_a_terminal(("compare", good), NO_COLOR="1")
     assert "\x1b" not in in_a_terminal(("compare", good), NO_COLOR=None, TERM="dumb")
+
+
+@pytest.mark.parametrize("streams", [">&-", "2>&-", "<&- >&- 2>&-"])
+@pytest.mark.parametrize("command", ["check {case}", "compare {case}", "refrigerants R448A", "check none.toml"])
+def test_streams_that_are_closed_end_without_a_traceback(good, streams, command):
+    """What cannot be said goes nowhere; the status still says whether it was done."""
+    line = f"exec {sys.executable} -m retrofit {command.format(case=good)} {streams}"
+    ended = subprocess.run(
+        ["bash", "-c", line], env={**os.environ, "PYTHONPATH": str(ROOT)}, capture_output=True, timeout=120, check=False
+    )
+
+    assert ended.returncode == (2 if "none" in command else 0)
+    assert b"Traceback" not in ended.stdout + ended.stderr
+
+
+def test_a_report_where_nothing_but_its_folder_can_be_written(process, good, tmp_path):
+    """Without a home: the report is there, what is lost is said in our own words, and no library says anything."""
+    nowhere = "/proc/none"
+    ended = process(
+        "report", good, "-o", tmp_path / "a.html",
+        HOME=nowhere, XDG_CACHE_HOME=nowhere, XDG_CONFIG_HOME=nowhere, RETROFIT_STORE=nowhere,
+    )  # fmt: skip
+
+    assert ended.returncode == 0
+    assert (tmp_path / "a.html").exists()
+    assert "retrofit: the property tables cannot be kept in /proc/none" in ended.stderr
+    assert all(line.startswith(("Building the property tables", "retrofit: ")) for line in ended.stderr.splitlines())

@@ -10,6 +10,7 @@ import numpy as np
 import pytest
 
 from retrofit import properties
+from retrofit.errors import StoreWarning
 from retrofit.properties import fluid, store
 from retrofit.properties.components import mixture_of
 
@@ -162,7 +163,8 @@ def test_directory_in_place_of_the_file(built):
     path, found = built
     path.unlink()
     path.mkdir()
-    again, told = _builds_again()
+    with pytest.warns(StoreWarning, match="cannot be kept"):
+        again, told = _builds_again()
 
     assert told == [NAME]
     _assert_same(again, found)
@@ -173,14 +175,27 @@ def test_directory_in_place_of_the_file(built):
 def test_file_in_place_of_the_folder(folder, tmp_path, monkeypatch):
     """A store that is a file cannot be written: the result is there all the same."""
     (tmp_path / "store").write_text("not a folder")
-    found = fluid(NAME)
+    with pytest.warns(StoreWarning, match="cannot be kept"):
+        found = fluid(NAME)
 
     assert float(found.p_dew(280.0)) > 0.0
     assert (tmp_path / "store").read_text() == "not a folder"
 
 
+def test_a_pipe_in_place_of_a_file_does_not_wait(built):
+    """Nobody writes to it; a file takes its place."""
+    path, found = built
+    path.unlink()
+    os.mkfifo(path)
+    again, told = _builds_again()
+
+    assert told == [NAME]
+    _assert_same(again, found)
+    assert path.is_file()
+
+
 def test_folder_that_cannot_be_written(built, monkeypatch):
-    """Where no file can be made, nothing is stored and nothing is said; the numbers are the same."""
+    """Where no file can be made, nothing is stored and that is said; the numbers are the same."""
     path, found = built
     path.unlink()
 
@@ -188,7 +203,8 @@ def test_folder_that_cannot_be_written(built, monkeypatch):
         raise PermissionError("read-only")
 
     monkeypatch.setattr(store.tempfile, "mkstemp", refuse)
-    again, told = _builds_again()
+    with pytest.warns(StoreWarning, match="cannot be kept in .*RETROFIT_STORE"):
+        again, told = _builds_again()
 
     assert told == [NAME]
     _assert_same(again, found)
@@ -202,7 +218,8 @@ def test_folder_without_permission(built):
     path.unlink()
     path.parent.chmod(0o500)
     try:
-        again, _ = _builds_again()
+        with pytest.warns(StoreWarning, match="cannot be kept"):
+            again, _ = _builds_again()
     finally:
         path.parent.chmod(0o700)
 
@@ -218,7 +235,8 @@ def test_disk_full_while_writing(built, monkeypatch):
         raise OSError(28, "No space left on device")
 
     monkeypatch.setattr(store.os, "replace", full)
-    again, _ = _builds_again()
+    with pytest.warns(StoreWarning, match="cannot be kept"):
+        again, _ = _builds_again()
 
     _assert_same(again, found)
     assert list(path.parent.iterdir()) == []

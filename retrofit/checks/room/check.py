@@ -28,6 +28,7 @@ from retrofit.study.room import (
     Question,
     RoomCheck,
     WorkedLimit,
+    unlimited_families,
 )
 
 # What `code` of [law] stands for; not stated, the rules usual in the jurisdiction are taken. With neither, the families
@@ -183,9 +184,10 @@ def room_check(comparison: Comparison, entry: Entry) -> RoomCheck:
 
 
 def _conditions(limits: Sequence[WorkedLimit], word: str) -> tuple[str, ...]:
-    """Return what holds instead of a limit; above one that stands, nothing does."""
-    found = [text for limit in limits if limit.role == "limit" for text in limit.conditions]
-    return () if word == ABOVE else tuple(dict.fromkeys(found))
+    """Return what holds instead, of the families that set no limit; while that is not decided, nothing does."""
+    families = unlimited_families(limits)
+    found = [text for limit in limits if limit.code_family in families for text in limit.conditions]
+    return tuple(dict.fromkeys(found)) if word in (BELOW, CONDITIONS) else ()
 
 
 def _change(comparison: Comparison, entry: Entry) -> ClassChange | None:

@@ -200,7 +200,9 @@ def _settled(
         least, decided_by = always
     reasons = []
     if keys and (most > least or len(masses) < len(known)):
-        reasons.append(f"{listed([f'`{key}`' for key in keys])} in [room] would say which row of the table holds")
+        reasons.append(
+            f"{listed([f'`{key}`' for key in keys], 'and')} in [room] would say which row of the table holds"
+        )
     if room.sealed is None and always[0] > least and "sealed" not in keys:
         reasons.append(
             f"`sealed` in [room] is not given, and a factory-sealed system may hold {mass_told(always[0])} anywhere"

@@ -30,7 +30,7 @@ def room_findings(comparison: Comparison, entry: Entry, room: RoomCheck) -> Iter
         yield _unknown(comparison, entry, room)
     else:
         yield from _doubtful(room)
-    if room.conditions and room.verdict != UNKNOWN:
+    if room.conditions:
         yield _under_conditions(comparison, entry, room)
     change = room.change
     if change is not None and change.level in ("work", "note"):
@@ -82,7 +82,7 @@ def _above(room: RoomCheck, is_existing: bool) -> Finding:
 
 def _under_conditions(comparison: Comparison, entry: Entry, room: RoomCheck) -> Finding:
     """Return the finding of a room without a limit of charge: what holds instead has to be shown, not assumed."""
-    limits = [limit for limit in room.limits if limit.role == "limit" and limit.conditions]
+    limits = [limit for limit in room.limits if limit.code_family in room.unlimited and limit.conditions]
     because = "; ".join(dict.fromkeys(f"{limit.code_family}: {limit.unlimited_because}" for limit in limits))
     return Finding(
         "room-conditions",

@@ -37,7 +37,14 @@ READING = (
     ("Ratios", "A ratio to today is the value with the candidate over the value with the refrigerant in the plant."),
     ("Verdicts", "A verdict covers what was checked here and nothing else; none says that a plant is without danger."),
 )
-AS_IS = "Savings and CO2e avoided count against the plant as it is; below 0 it is more than with the plant as it is."
+AS_IS = (
+    "Savings, net present value and CO2e avoided are against the plant as it is; above 0 the option saves, below 0 it "
+    "costs or emits more."
+)
+BOUNDS = (
+    "A sum that the column Lower bounds names lacks an item and is at least what stands there. Comparison says whether "
+    "a saving counts every item; it is incomplete where one is known for only one of the two, and then left empty."
+)
 PRICES = "Prices stay as they are today, in the currency that the heading names; nothing is converted."
 Row = tuple[str, str, str, str]
 
@@ -115,3 +122,4 @@ def _life(comparison: Comparison, units: UnitSystem) -> Iterator[Row]:
         for name, text in FORMULAS.items():
             yield topic, f"How {name} is reckoned", text, ""
         yield topic, "Money", PRICES, ""
+        yield topic, "Sums", BOUNDS, ""

@@ -390,4 +390,15 @@ def test_keys_that_settle_an_open_limit_are_named(results):
     (finding,) = [item for item in candidate.findings if item.code == "room-charge"]
 
     assert finding.level == "unknown"
-    assert finding.missing == ("room.emergency_exits",)
+    assert "room.emergency_exits" in finding.missing
+
+
+def test_conditions_stand_only_where_no_rule_of_the_family_limits(results):
+    """R1234yf with nobody saying how many people: toxicity sets no limit, the LFL does, so nothing stands instead."""
+    open_, few = (
+        results("EN 378", access="c", volume="20 m3", people=people).candidates[1].room for people in (None, 2)
+    )
+
+    assert (open_.verdict, open_.unlimited, open_.conditions) == ("unknown", (), ())
+    assert (few.verdict, few.unlimited) == ("under conditions", ("EN 378",))
+    assert few.conditions
