@@ -282,9 +282,9 @@ def test_unmet_hours_and_the_finding_on_capacity_mention_each_other():
 
 def test_readings_in_doubt_are_asked_for_again():
     """A discharge colder than an isentropic compression puts readings in doubt, and the list names them."""
-    full = tomllib.loads((ROOT / "cases" / "process-chiller.toml").read_text(encoding="utf-8"))
+    full = tomllib.loads((ROOT / "cases" / "harbour-market.toml").read_text(encoding="utf-8"))
     full["readings"]["discharge_temperature"] = "30 degC"
-    comparison = assess(compare(case_from_data(full, ROOT / "cases" / "process-chiller.toml", "")))
+    comparison = assess(compare(case_from_data(full, ROOT / "cases" / "harbour-market.toml", "")))
     doubted = [key for key in survey(comparison) if any(item.part == Part.READING for item in key.settles)]
 
     assert "readings.discharge_temperature" in {key.facts.key for key in doubted}
