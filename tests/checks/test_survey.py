@@ -278,3 +278,14 @@ def test_unmet_hours_and_the_finding_on_capacity_mention_each_other():
     assert f"In the year computed {hours:.0f} h have unmet load." in finding.fact
     assert "stopped for it" in capacity_words(option)
     assert lived(living, living.life).candidates == living.candidates
+
+
+def test_readings_in_doubt_are_asked_for_again():
+    """A discharge colder than an isentropic compression puts readings in doubt, and the list names them."""
+    full = tomllib.loads((ROOT / "cases" / "harbour-market.toml").read_text(encoding="utf-8"))
+    full["readings"]["discharge_temperature"] = "30 degC"
+    comparison = assess(compare(case_from_data(full, ROOT / "cases" / "harbour-market.toml", "")))
+    doubted = [key for key in survey(comparison) if any(item.part == Part.READING for item in key.settles)]
+
+    assert "readings.discharge_temperature" in {key.facts.key for key in doubted}
+    assert all(key.facts.where for key in doubted)
