@@ -321,7 +321,7 @@ def outlook(comparison: Comparison) -> tuple[LawOutlook, ...]:
     Args:
         comparison: An assessed result.
     """
-    checks = [(entry, entry.law.rows_on("proposal")) for entry in comparison.entries if entry.law]
+    checks = [(entry, _by_component(entry.law)) for entry in comparison.entries if entry.law]
     return tuple(
         LawOutlook(
             entry.refrigerant.display_name,
@@ -331,6 +331,11 @@ def outlook(comparison: Comparison) -> tuple[LawOutlook, ...]:
         for entry, rows in checks
         if rows
     )
+
+
+def _by_component(check: LawCheck) -> list[LawRow]:
+    """Return the rows of the outlook that name components; any other proposal stands among the rows only."""
+    return [row for row in check.rows_on("proposal") if any(item.measure == "share" for item in row.measured)]
 
 
 def _parts(rows: Iterable[LawRow]) -> str:

@@ -44,6 +44,11 @@ EQUIVALENT: dict[tuple[str, str, str], str] = {
         "changes_needed",
         "np.log(wanted) / np.log(kept) - 1e-09 -> np.log(wanted) / np.log(kept) - 1.1000000000000001e-09",
     ): _TOLERANCE,
+    (
+        "equipment/compressor.py",
+        "",
+        "0.05 -> 0.05500000000000001",
+    ): "how wide the corner at the end of a curve is rounded",
     ("equipment/compressor.py", "constant", "[1.0, 2.0] -> [1.0, 2.2]"): "where the nodes of a level curve stand",
     ("equipment/compressor.py", "constant", "[1.0, 2.0] -> [1.1, 2.0]"): "where the nodes of a level curve stand",
     (

@@ -7,6 +7,7 @@ import pytest
 
 from retrofit.meeting.board import build_board
 from retrofit.meeting.lineup import HEADLINES, TODAY
+from retrofit.study import Verdict
 
 
 def field(html, key):
@@ -240,7 +241,7 @@ def test_hide_show_and_pin(client, read):
 
     assert columns == ["R-404A", "R-454C"]
     assert "R-448A" in read(hidden)[1]
-    assert "suits with work" in hidden
+    assert "open" in hidden
     assert pinned == ["R-404A", "R-454C", "R-448A"]
 
 
@@ -398,7 +399,7 @@ def test_the_line_up_has_what_a_client_asks_for(client, read):
     assert "R-448A and R-449A alike" in board.lineup.shared
     assert "Work that every conversion needs" in board.lineup.shared
     assert "Work that every conversion needs" not in shown["R448A"].reasons
-    assert "Less mild safety class" in shown["R454C"].reasons
+    assert "More hazardous safety class" in shown["R454C"].reasons
     for name, place in (("R448A", "R-448A"), ("R454C", "R-454C")):
         assert shown[name].cells[-1].text == saving.cells[table.columns.index(place)].text
     told = {mark for player in shown.values() for cell in player.cells for mark in cell.marks}
@@ -420,10 +421,10 @@ def test_what_rules_a_candidate_out_is_told_at_that_candidate(client):
     """Only work is told once for several; two candidates with the same stop both carry it."""
     client.change("add", designation="R454A")
     board = build_board(client.session.moment(), client.session.source, client.app.extensions["meeting"].pictures)
-    stopped = [player for player in board.lineup.players if player.judged.verdict == "does not suit"]
+    stopped = [player for player in board.lineup.players if player.judged.verdict == Verdict.NOT_SUITABLE]
 
     assert len(stopped) == 2
-    assert all("Less mild safety class" in player.reasons for player in stopped)
+    assert all("More hazardous safety class" in player.reasons for player in stopped)
 
 
 def test_the_cautions_scroll_under_what_stays_in_sight(client):

@@ -10,6 +10,7 @@ import pytest
 from retrofit.case import read_case
 from retrofit.checks import assess
 from retrofit.report import render_html
+from retrofit.report.law import outlook
 from retrofit.report.terminal import comparison_text
 from retrofit.study import compare
 from retrofit.study.law import RowState
@@ -280,3 +281,22 @@ def test_the_line_of_time_of_the_harbour_market(page_of, read_page):
     shown = sorted({f"{row[0]} {row[1]}" for row in rows})
 
     assert shown == sorted(plain(text) for text in GOLDEN.split("\n"))
+
+
+# Outlook
+
+
+def test_the_outlook_names_parts_and_shares(page_of, read_page):
+    """By hand, ASHRAE 34: R454C is 21.5 % R32 and 78.5 % R1234yf; R1234yf turns into TFA wholly, R32 not at all."""
+    rows = {row[0]: row for row in read_page(page_of("harbour-market", "si")).tables["t-law-outlook"][1:]}
+
+    assert rows["R-454C"][1] == "78.5 % by mass of R-1234yf"
+    assert rows["R-454C"][2] == "78.5 % by mass of R-1234yf (100 % by mole)"
+    assert "R-32" not in " ".join(rows["R-454C"])
+
+
+def test_a_proposal_without_components_is_no_line_of_the_outlook(case_with):
+    """A proposal on a kind of equipment in the US stands among the rows; the outlook by component stays empty."""
+    result = assess(compare(case_with(law={"jurisdiction": "US", "equipment": "transport"})))
+
+    assert outlook(result) == ()
