@@ -377,7 +377,7 @@ def _place(row: LawRow) -> tuple[int, datetime.date]:
 def _item(pairs: list[tuple[Entry, LawRow]], texts: Mapping[str, tuple[str, str]]) -> LawItem:
     """Return a row as texts; edition and address stand beside it only where they are not those of its table."""
     row = pairs[0][1]
-    said = [(entry, _kind(item), "; ".join(map(number_text, item.measured))) for entry, item in pairs]
+    said = [(entry, _kind(item), spelled("; ".join(map(number_text, item.measured)))) for entry, item in pairs]
     kinds = gathered((entry, kind) for entry, kind, _ in said)
     return LawItem(
         dates(row),

@@ -115,7 +115,7 @@ def test_whatever_check_accepts_compare_does_not_refuse(run, tmp_path):
     for hours in (ROOT / "cases").glob("*.csv"):
         shutil.copy(hours, tmp_path)
     accepted = refused = 0
-    for number in range(300):
+    for number in range(360):
         path = tmp_path / f"case-{number}.toml"
         data = script.broken_case(shipped, draw)
         if draw.random() < 0.3:
@@ -131,7 +131,7 @@ def test_whatever_check_accepts_compare_does_not_refuse(run, tmp_path):
             refused += 1
         path.unlink()
 
-    assert accepted > 15
+    assert accepted > 10
     assert refused > 15
 
 
