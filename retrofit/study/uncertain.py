@@ -19,6 +19,7 @@ import numpy as np
 from retrofit.case import Case, meaning
 from retrofit.case.model import FIELDS
 from retrofit.case.values import FileValue
+from retrofit.study.efficiencies import has_curve as compressor_has_curve
 from retrofit.study.spread import FloatArray, Spread, single, triangular
 
 WEATHER = "year.weather"  # the weather of the year as a whole: a shift
@@ -35,6 +36,7 @@ PHYSICAL = {
     "compressor.volumetric_efficiency": "Volumetric efficiency",
     "compressor.swept_volume": "Swept volume",
     "compressor.motor_efficiency": "Motor efficiency",
+    "compressor.drive_efficiency": "Efficiency of the drive",
     "compressor.heat_loss": "Heat loss of the compressor",
     "evaporator.inlet": "Medium into the evaporator",
     "evaporator.outlet": "Medium out of the evaporator",
@@ -201,7 +203,7 @@ def has_curve(case: Case) -> bool:
     Args:
         case: The case.
     """
-    return case.compressor.efficiency_points is not None or case.compressor.polynomial is not None
+    return compressor_has_curve(case.compressor)
 
 
 @cache
