@@ -14,7 +14,7 @@ import pytest
 
 from retrofit.case import read_case
 from retrofit.checks import assess
-from retrofit.study import Comparison, Entry, compare
+from retrofit.study import Comparison, Entry, Verdict, compare
 
 CASES = Path(__file__).resolve().parents[1] / "cases"
 TODAY = datetime.date(2026, 12, 1)
@@ -51,14 +51,15 @@ def test_keeping_is_always_beside_the_candidates(path: Path) -> None:
     assert found.existing.family == "keep"
     for entry in found.candidates:
         assert entry.family in ("convert", "replace")
-        assert (entry.verdict == "does not suit") == bool(stops(path.stem, entry.refrigerant.designation))
+        assert (entry.verdict == Verdict.NOT_SUITABLE) == bool(stops(path.stem, entry.refrigerant.designation))
 
 
 def test_harbour_market_converts_to_a_blend_of_class_a1() -> None:
-    """EX1: R448A, R449A, R407A, R407H and R452A suit with work; R454C would be a new plant."""
+    """EX1: R448A, R449A, R407A, R407H and R452A are suitable with modifications; R454C is judged as a new plant."""
     for name in ("R448A", "R449A", "R407A", "R407H", "R452A"):
-        assert entry_of("harbour-market", name).verdict == "suits with work"
-    assert stops("harbour-market", "R454C") == {"safety-class"}
+        assert entry_of("harbour-market", name).verdict == Verdict.MODIFICATIONS
+    assert entry_of("harbour-market", "R454C").is_new_plant
+    assert stops("harbour-market", "R454C") == set()
     assert entry_of("harbour-market", "R448A").relative["capacity"] == pytest.approx(1.07, abs=0.03)
 
 
@@ -81,10 +82,10 @@ def test_cold_store_pumps_no_glide_and_no_ammonia_through_copper() -> None:
 
 
 def test_office_chiller_keeps_its_capacity_with_one_blend_only() -> None:
-    """EX4: R513A suits with work; R515B and R1234ze(E) lose a quarter of the capacity, the latter is A2L too."""
-    assert entry_of("office-chiller", "R513A").verdict == "suits with work"
+    """EX4: R513A is suitable with modifications; R515B loses a quarter of the capacity; R1234ze(E) is a new chiller."""
+    assert entry_of("office-chiller", "R513A").verdict == Verdict.MODIFICATIONS
     assert "capacity" in stops("office-chiller", "R515B")
-    assert {"capacity", "safety-class"} <= stops("office-chiller", "R1234ze(E)")
+    assert entry_of("office-chiller", "R1234ze(E)").is_new_plant
 
 
 def test_desert_split_meets_pressure_class_and_capacity() -> None:
@@ -93,54 +94,56 @@ def test_desert_split_meets_pressure_class_and_capacity() -> None:
     assert {"high-side", "safety-class"} <= stops("desert-split", "R32")
     assert "safety-class" in stops("desert-split", "R290")
     assert "capacity" in stops("desert-split", "R417A")
-    assert entry_of("desert-split", "R427A").verdict == "cannot be said"
+    assert entry_of("desert-split", "R427A").verdict == Verdict.OPEN
 
 
 def test_ice_rink_floods_its_evaporator() -> None:
-    """EX6: glide rules R427A, R449A and R422D out; R513A loses 40 %; R507A is what is left, with work."""
+    """EX6: glide rules R427A, R449A and R422D out; R513A loses 40 %; R507A is left, open until data is given."""
     for name in ("R427A", "R449A", "R422D"):
         assert "glide" in stops("ice-rink", name)
     assert entry_of("ice-rink", "R513A").relative["capacity"] == pytest.approx(0.60, abs=0.03)
-    assert entry_of("ice-rink", "R507A").verdict == "suits with work"
+    assert entry_of("ice-rink", "R507A").verdict == Verdict.OPEN
+    assert "plant.highest_ambient" in {key for f in entry_of("ice-rink", "R507A").open_facts for key in f.missing}
 
 
-def test_trailer_cannot_be_judged_without_its_oil() -> None:
-    """EX7: the oil is not stated, so R452A cannot be said to suit, close as it is; the controller needs work."""
+def test_trailer_is_open_until_its_data_are_given() -> None:
+    """EX7: ratings and room are not stated, so R452A is open, close as it is; the controller needs work."""
     entry = entry_of("trailer", "R452A")
 
-    assert entry.verdict == "cannot be said"
+    assert entry.verdict == Verdict.OPEN
     assert {"oil"} <= {finding.code for finding in entry.findings if finding.level == "unknown"}
     assert "controller" in {finding.code for finding in entry.findings if finding.level == "work"}
     assert abs(celsius("trailer", "R452A") - celsius("trailer", "R404A")) < 8.0
 
 
 def test_coast_heat_pump_is_not_converted() -> None:
-    """EX8: no candidate suits; the answer is to keep it or to replace it."""
+    """EX8: no conversion is suitable; what is left is keeping it, or a new heat pump for R290."""
     found = story("coast-heat-pump")
 
-    assert {entry.verdict for entry in found.candidates} == {"does not suit"}
+    assert {entry.verdict for entry in found.candidates if not entry.is_new_plant} == {Verdict.NOT_SUITABLE}
+    assert entry_of("coast-heat-pump", "R290").is_new_plant
     assert {entry.family for entry in found.candidates} == {"replace"}
-    assert found.existing.verdict == "suits"
+    assert found.existing.stops == ()
 
 
 def test_process_chiller_glides_today_already() -> None:
-    """EX9: the existing R407C glides too; R448A and R449A suit with work, R450A loses half the capacity."""
+    """EX9: the existing R407C glides too; R448A and R449A are suitable with modifications, R450A halves capacity."""
     today = entry_of("process-chiller", "R407C").duty
 
     assert today is not None
     assert today.glide_evap_K > 4.0
     for name in ("R448A", "R449A"):
-        assert entry_of("process-chiller", name).verdict == "suits with work"
+        assert entry_of("process-chiller", name).verdict == Verdict.MODIFICATIONS
     assert entry_of("process-chiller", "R450A").relative["capacity"] == pytest.approx(0.51, abs=0.04)
     assert "capacity" in stops("process-chiller", "R450A")
 
 
 def test_bottle_cooler_takes_no_flammable_refrigerant() -> None:
-    """EX10: R1234yf, R600a and R290 are for new appliances; R513A and R450A suit with work at most."""
+    """EX10: R1234yf, R600a and R290 are for new appliances; R513A and R450A need modifications at least."""
     for name in ("R1234yf", "R600a", "R290"):
         assert "safety-class" in stops("bottle-cooler", name)
     for name in ("R513A", "R450A"):
-        assert entry_of("bottle-cooler", name).verdict == "suits with work"
+        assert entry_of("bottle-cooler", name).verdict == Verdict.MODIFICATIONS
 
 
 def test_gates_are_told_in_the_order_options_die() -> None:

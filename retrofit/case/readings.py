@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from typing import Annotated
+from typing import Annotated, Any
 
 from pydantic import Field
 
@@ -24,13 +24,23 @@ _SECONDARY = Annotated[
 ]
 
 
+def _read(alias: str, meaning: str) -> Any:
+    """Return the pydantic field of a reading.
+
+    Args:
+        alias: The key in the file. [-]
+        meaning: What it is. [-]
+    """
+    return key(alias, meaning, None, where="instrument on the running plant, at steady full load")
+
+
 class Readings(Table):
     """What was measured on the running plant; whatever was not measured is left out."""
 
     date: Annotated[str | None, Text(40)] = key("date", "When the readings were taken.", None)
     ambient_K: Annotated[
         float | None, Quantity("temperature", "-60 degC", "60 degC", "outdoor air lies within it", example="25 degC")
-    ] = key("ambient", "Temperature of the outdoor air during the readings.", None)
+    ] = _read("ambient", "Temperature of the outdoor air during the readings.")
     load: Annotated[
         float | None,
         Quantity("fraction", "0 %", "100 %", "a share of the full duty", above_low=True, example="80 %"),
@@ -40,40 +50,38 @@ class Readings(Table):
         None,
         where="capacity steps or speed during the readings",
     )
-    suction_pressure_Pa: _PRESSURE = key("suction_pressure", "Pressure at the compressor inlet.", None)
-    discharge_pressure_Pa: _PRESSURE = key("discharge_pressure", "Pressure at the compressor outlet.", None)
-    liquid_pressure_Pa: _PRESSURE = key("liquid_pressure", "Pressure in the liquid line.", None)
-    evaporator_outlet_temperature_K: _TEMPERATURE = key(
-        "evaporator_outlet_temperature", "Pipe temperature at the evaporator outlet.", None
+    suction_pressure_Pa: _PRESSURE = _read("suction_pressure", "Pressure at the compressor inlet.")
+    discharge_pressure_Pa: _PRESSURE = _read("discharge_pressure", "Pressure at the compressor outlet.")
+    liquid_pressure_Pa: _PRESSURE = _read("liquid_pressure", "Pressure in the liquid line.")
+    evaporator_outlet_temperature_K: _TEMPERATURE = _read(
+        "evaporator_outlet_temperature", "Pipe temperature at the evaporator outlet."
     )
-    suction_temperature_K: _TEMPERATURE = key("suction_temperature", "Pipe temperature at the compressor inlet.", None)
-    discharge_temperature_K: _TEMPERATURE = key(
-        "discharge_temperature", "Pipe temperature at the compressor outlet.", None
-    )
-    liquid_temperature_K: _TEMPERATURE = key(
-        "liquid_temperature", "Pipe temperature of the liquid before the expansion valve.", None
+    suction_temperature_K: _TEMPERATURE = _read("suction_temperature", "Pipe temperature at the compressor inlet.")
+    discharge_temperature_K: _TEMPERATURE = _read("discharge_temperature", "Pipe temperature at the compressor outlet.")
+    liquid_temperature_K: _TEMPERATURE = _read(
+        "liquid_temperature", "Pipe temperature of the liquid before the expansion valve."
     )
     power_W: Annotated[
         float | None, Quantity("power", "0 W", "100 MW", "no single plant takes more", above_low=True, example="54 kW")
-    ] = key("power", "Electrical power of the compressors.", None)
+    ] = _read("power", "Electrical power of the compressors.")
     current_A: Annotated[float | None, CURRENT] = key(
         "current", "Current of the compressors.", None, where="clamp meter at full load, all compressors"
     )
-    voltage_V: Annotated[float | None, VOLTAGE] = key("voltage", "Voltage between phases, or of the one phase.", None)
+    voltage_V: Annotated[float | None, VOLTAGE] = _read("voltage", "Voltage between phases, or of the one phase.")
     phases: Annotated[int | None, PHASES] = key("phases", "Phases of the supply, 1 or 3.", None)
     power_factor: Annotated[float | None, POWER_FACTOR] = key("power_factor", "Power factor of the motors.", None)
-    evaporator_in_K: _SECONDARY = key("evaporator_in", "Air, water or brine entering the evaporator.", None)
-    evaporator_out_K: _SECONDARY = key("evaporator_out", "Air, water or brine leaving the evaporator.", None)
-    evaporator_flow_kg_per_s: Annotated[float | None, FLOW] = key(
-        "evaporator_flow", "Mass flow of air, water or brine through the evaporator.", None
+    evaporator_in_K: _SECONDARY = _read("evaporator_in", "Air, water or brine entering the evaporator.")
+    evaporator_out_K: _SECONDARY = _read("evaporator_out", "Air, water or brine leaving the evaporator.")
+    evaporator_flow_kg_per_s: Annotated[float | None, FLOW] = _read(
+        "evaporator_flow", "Mass flow of air, water or brine through the evaporator."
     )
     evaporator_specific_heat_J_per_kgK: Annotated[float | None, SPECIFIC_HEAT] = key(
         "evaporator_specific_heat", "Specific heat of what flows through the evaporator.", None
     )
-    condenser_in_K: _SECONDARY = key("condenser_in", "Air, water or brine entering the condenser.", None)
-    condenser_out_K: _SECONDARY = key("condenser_out", "Air, water or brine leaving the condenser.", None)
-    condenser_flow_kg_per_s: Annotated[float | None, FLOW] = key(
-        "condenser_flow", "Mass flow of air, water or brine through the condenser.", None
+    condenser_in_K: _SECONDARY = _read("condenser_in", "Air, water or brine entering the condenser.")
+    condenser_out_K: _SECONDARY = _read("condenser_out", "Air, water or brine leaving the condenser.")
+    condenser_flow_kg_per_s: Annotated[float | None, FLOW] = _read(
+        "condenser_flow", "Mass flow of air, water or brine through the condenser."
     )
     condenser_specific_heat_J_per_kgK: Annotated[float | None, SPECIFIC_HEAT] = key(
         "condenser_specific_heat", "Specific heat of what flows through the condenser.", None
@@ -83,8 +91,8 @@ class Readings(Table):
         "Whether power read over modelled power is taken as losses of motor and drive, alike for every option.",
         None,
     )
-    hours_per_day: Annotated[float | None, Quantity("hours per day", "0", "24", "a day has no more")] = key(
-        "hours_per_day", "Hours that the compressors run in a day.", None
+    hours_per_day: Annotated[float | None, Quantity("hours per day", "0", "24", "a day has no more")] = _read(
+        "hours_per_day", "Hours that the compressors run in a day."
     )
 
 

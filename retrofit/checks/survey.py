@@ -1,7 +1,7 @@
 """What is missing, key by key: what each key is, where to read it, how to write it, and what it would settle.
 
-Every unknown of a result names the keys that settle it: components, findings (law and room among them), and of the
-remaining life year, emissions and money. Here they are gathered by key, the most decisive first.
+Every unknown of a result names the keys that settle it: components, findings (law and room among them), readings in
+doubt, and of the remaining life year, emissions and money. Here they are gathered by key, the most decisive first.
 """
 
 from __future__ import annotations
@@ -25,6 +25,7 @@ class Part(StrEnum):
 
     FINDING = "finding"
     COMPONENT = "component"
+    READING = "reading"
     YEAR = "year"
     EMISSIONS = "emissions"
     MONEY = "money"
@@ -85,7 +86,8 @@ def unknowns(comparison: Comparison) -> tuple[Unknown, ...]:
     Args:
         comparison: An assessed result, with or without its remaining life.
     """
-    return tuple(unknown for entry in comparison.entries for unknown in _of_entry(comparison, entry))
+    of_entries = (unknown for entry in comparison.entries for unknown in _of_entry(comparison, entry))
+    return (*_of_readings(comparison), *of_entries)
 
 
 def survey(comparison: Comparison) -> tuple[OpenKey, ...]:
@@ -107,6 +109,14 @@ def survey(comparison: Comparison) -> tuple[OpenKey, ...]:
 def _rank(item: OpenKey) -> tuple[bool, int, int]:
     decided = sum(unknown.decisive for unknown in item.settles)
     return not item.decisive, -decided, -len(item.settles)
+
+
+def _of_readings(comparison: Comparison) -> Iterator[Unknown]:
+    """Yield what contradicts itself in the readings: to be read again, or left out."""
+    name = comparison.existing.refrigerant.designation
+    for finding in comparison.baseline.problems if comparison.baseline is not None else ():
+        if finding.level == Level.UNKNOWN and finding.missing:
+            yield Unknown(Part.READING, name, finding.code, finding.title, finding.missing)
 
 
 def _of_entry(comparison: Comparison, entry: Entry) -> Iterator[Unknown]:

@@ -69,7 +69,7 @@ class Threshold:
 
         Args:
             level: The level it is for.
-            written: A bare number, or a quantity as text.
+            written: A bare number, or a quantity as text. [unit of the figures, or its own]
         Raises: QuantityError if a figure with a unit is written without, or the other way round.
         """
         if not self.kind:

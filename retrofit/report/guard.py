@@ -61,7 +61,9 @@ def _check(html: str, cautions: str) -> None:
         raise ReportError(
             "the template is refused: the page has to begin with <!DOCTYPE html>; take it from report.html"
         )
-    nodes = list(tree.root.traverse(include_text=False)) if tree.root else []
+    # A comment that ends shows and hides nothing; one that does not takes the block with it.
+    found = tree.root.traverse(include_text=False) if tree.root else ()
+    nodes = [node for node in found if not node.is_comment_node]
     _check_nothing_runs(nodes)
     block = _block(nodes, cautions)
     around = _around(block)

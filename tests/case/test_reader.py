@@ -219,14 +219,14 @@ def test_the_message_has_file_line_key_and_text(case, tmp_path):
             "[compressor]\nisentropic_efficiency = 0\n[compare]",
             8,
             "compressor.isentropic_efficiency",
-            "above 0 % and up to 100 %",
+            "10 % to 100 %",
         ),
         (
             "[compare]",
             "[compressor]\nvolumetric_efficiency = 1.01\n[compare]",
             8,
             "compressor.volumetric_efficiency",
-            "above 0 % and up to 100 %",
+            "10 % to 100 %",
         ),
         (
             "[compare]",

@@ -97,7 +97,7 @@ def test_limits_are_the_users_own_where_the_case_has_them(plant_of, model):
         f'[readings]\npower = "{1.11 * model.power_W / 1e3:.6f} kW"\n'
         f'discharge_temperature = "{model.T_discharge_K - 273.15 + 11.0:.4f} degC"\n'
     )
-    own = "[thresholds]\nreading_share = {note = 0.15}\nreading_temperature = {note = 20}\n"
+    own = '[thresholds]\nreading_share = {note = 0.15}\nreading_temperature = {note = "20 K"}\n'
     found = plant_of(readings + own)
 
     assert {held(found, quantity).outcome for quantity in (Compared.POWER, Compared.DISCHARGE)} == {Outcome.AGREES}

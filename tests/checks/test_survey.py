@@ -13,14 +13,16 @@ from pathlib import Path
 
 import pytest
 
-from retrofit.case import facts_of
+from retrofit.case import facts_of, read_case
 from retrofit.case.model import field_of
 from retrofit.case.reader import case_from_data
 from retrofit.checks import assess
+from retrofit.checks.outlook import capacity_words
+from retrofit.checks.prospects import prospects
 from retrofit.checks.survey import Part, survey, unknowns
 from retrofit.errors import CaseFileError
 from retrofit.study import Level, compare
-from retrofit.study.life import life_of
+from retrofit.study.life import life_of, lived
 
 ROOT = Path(__file__).resolve().parents[2]
 CASES = sorted((ROOT / "cases").glob("*.toml"))
@@ -249,3 +251,41 @@ def test_an_answer_in_writing_settles_a_component(case_with, answer, verdict):
     assert row.missing == ()
     assert other.missing == ("approvals.compressor",)
     assert "in writing" in row.source
+
+
+def test_a_fixed_orifice_is_judged_as_what_cannot_be_adjusted(case_with):
+    """Within a tenth the charge sets it, beyond it is replaced, as a capillary tube is; a valve would be re-set."""
+    verdicts = {}
+    for kind in ("capillary", "fixed orifice", "thermostatic"):
+        (entry,) = assess(compare(case_with("R22", ("R407C",), valve={"kind": kind}))).candidates
+        row = next(row for row in entry.hardware if row.code == "expansion-valve")
+        verdicts[kind] = row.verdict
+        assert (row.name == "Fixed orifice") is (kind == "fixed orifice")
+
+    assert verdicts["fixed orifice"] == verdicts["capillary"]
+
+
+def test_unmet_hours_and_the_finding_on_capacity_mention_each_other():
+    """R-515B in the office chiller is stopped for its capacity, and its year leaves load unmet: each says so."""
+    comparison = assess(compare(read_case(ROOT / "cases" / "office-chiller.toml")))
+    living = lived(comparison, life_of(comparison, draws=0, hourly=False))
+    entry = next(entry for entry in living.candidates if entry.refrigerant.designation == "R515B")
+    finding = next(item for item in entry.findings if item.code == "capacity")
+    hours = living.life.years["R515B"].unmet_h
+    (option,) = [option for option in prospects(living) if option.entry is entry]
+
+    assert hours > 0.0
+    assert f"In the year computed {hours:.0f} h have unmet load." in finding.fact
+    assert "stopped for it" in capacity_words(option)
+    assert lived(living, living.life).candidates == living.candidates
+
+
+def test_readings_in_doubt_are_asked_for_again():
+    """A discharge colder than an isentropic compression puts readings in doubt, and the list names them."""
+    full = tomllib.loads((ROOT / "cases" / "harbour-market.toml").read_text(encoding="utf-8"))
+    full["readings"]["discharge_temperature"] = "30 degC"
+    comparison = assess(compare(case_from_data(full, ROOT / "cases" / "harbour-market.toml", "")))
+    doubted = [key for key in survey(comparison) if any(item.part == Part.READING for item in key.settles)]
+
+    assert "readings.discharge_temperature" in {key.facts.key for key in doubted}
+    assert all(key.facts.where for key in doubted)

@@ -123,6 +123,9 @@ def test_constant_efficiencies():
         ([[2, 0.6, 0.9], [3, 0.6, 0.0]], "point 2: volumetric efficiency 0 is not"),
         ([[2, 62, 92], [3, 60, 90]], "point 1: isentropic efficiency 62"),
         ([[2, 0.6, float("nan")], [3, 0.6, 0.9]], "point 1: volumetric efficiency nan"),
+        ([[2, 1.001, 0.9], [3, 0.6, 0.9]], "point 1: isentropic efficiency 1.001 is not above 0 and at most 1"),
+        ([[2, 0.6, 0.9], [3, 0.6, 1.001]], "point 2: volumetric efficiency 1.001 is not above 0 and at most 1"),
+        ([[2, 0.0, 0.9], [3, 0.6, 0.9]], "point 1: isentropic efficiency 0 is not above 0 and at most 1"),
     ],
 )
 def test_bad_points_are_named(points, message):

@@ -104,7 +104,7 @@ def test_the_whole_meeting(room, case_file):
     window.get_by_label("The meeting", exact=True).fill("Ask the maker.")
     expect(window.locator("#board")).to_have_attribute("data-said", "notes")
     window.get_by_role("button", name="Hide R-454C").click()
-    expect(window.locator("ul.hidden-list li")).to_contain_text("does not suit")
+    expect(window.locator("ul.hidden-list li")).to_contain_text("not suitable")
     window.get_by_role("button", name="Undo").click()
     expect(window.locator("ul.hidden-list li")).to_have_count(0)
 

@@ -66,7 +66,7 @@ ENTRY = table(
         "compressor": {},
         "plant": {},
         "relative": {},
-        "verdict": {"enum": ["suits", "suits with work", "does not suit", "cannot be said"]},
+        "verdict": {"enum": ["suitable", "suitable with modifications", "open", "not suitable"]},
         "findings": {"type": "array", "items": FINDING},
     },
     **{

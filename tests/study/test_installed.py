@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
 from pathlib import Path
 
 import numpy as np
@@ -11,7 +12,7 @@ from CoolProp.CoolProp import PropsSI
 from retrofit.case import Case, read_case
 from retrofit.cycle import Settings, solve_cycle
 from retrofit.properties import fluid
-from retrofit.study import Comparison, Entry, Installed, compare
+from retrofit.study import Comparison, Entry, Installed, compare, installed
 from retrofit.study.efficiencies import CompressorModel, efficiency_model
 from retrofit.study.installed import ExistingPlant, existing_plant, machine_at
 
@@ -364,3 +365,21 @@ def test_a_search_at_other_media_begins_where_they_moved_to(tmp_path: Path) -> N
     assert float(starts[1]) == pytest.approx(310.15, abs=1e-6)
     assert (machine.evaporator.secondary.T_in_K, machine.condenser.secondary.T_in_K) == (278.15, 300.15)
     assert machine.evaporator.conductance_W_per_K == plant.machine.evaporator.conductance_W_per_K
+
+
+@pytest.mark.parametrize("errors", [(1e-8, 3e-8), (3e-8, 1e-8)])
+def test_the_residual_told_is_the_larger_one(
+    errors: tuple[float, float], tmp_path: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    """Of full speed and same cooling; what shows the effect of films does not count."""
+    solve = installed.balance
+
+    def told(*arguments: object) -> object:
+        found = solve(*arguments)  # type: ignore[arg-type]
+        if found.residual.shape != (3,):
+            return found
+        return replace(found, residual=np.array([*errors, 5e-7]))
+
+    monkeypatch.setattr(installed, "balance", told)
+
+    assert plant_of(compare(case_of(tmp_path)).existing).residual == 3e-8

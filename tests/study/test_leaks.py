@@ -33,6 +33,18 @@ def test_the_log_wins(case_with):
     assert "38 kg / 260 kg" in found.source
 
 
+@pytest.mark.parametrize(("last", "short"), [("2024-03-01", ""), ("2024-02-01", "the log covers 337 days")])
+def test_a_short_log_says_so(last, short, case_with):
+    """A leap year's 366 days are long enough; to 1 February it is 366 - 29 = 337 days."""
+    case = case_with(plant={"charge": "260 kg"}, emissions={"leak_log": [["2023-03-01", "30 kg"], [last, "18 kg"]]})
+
+    found = leak_rate_today(case)
+
+    assert found.basis == "log"
+    assert found.missing.startswith(short)
+    assert bool(found.missing) is bool(short)
+
+
 def test_what_goes_before_what(case_with):
     """Emissions before law, law before the range by type, and a log without a charge says what it lacks."""
     law = {"annual_leak_rate": "15 %", "equipment": "supermarket"}

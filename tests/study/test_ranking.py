@@ -15,7 +15,7 @@ from retrofit.study import compare
 from retrofit.study.accounts import accounts
 from retrofit.study.criteria import CRITERIA, Criterion, criteria
 from retrofit.study.plan import Use
-from retrofit.study.ranking import Scores, flip, order, rank_stability, score, stability_words
+from retrofit.study.ranking import Scores, Stability, flip, order, rank_stability, score, stability_words
 from retrofit.study.result import Comparison, Entry, Finding
 from retrofit.study.spread import base_only
 
@@ -267,3 +267,23 @@ def test_a_year_goes_before_a_cop(market):
 
     assert (by_name["energy"].measure, by_name["energy"].unit) == ("electricity of a year", "J")
     assert set(by_name["energy"].values.values()) == {1e12}
+
+
+def test_stability_is_told_from_the_most_frequent_first():
+    """Three options with shares of a quarter, nothing and the rest: the larger share is told first, none not at all."""
+    scores = Scores(
+        names=("R448A", "R449A", "R454C"),
+        criteria=("energy",),
+        measures=("energy",),
+        scores=np.zeros((3, 1)),
+        is_unknown=np.zeros((3, 1), dtype=bool),
+        doubts=np.zeros((3, 3, 1)),
+        not_ranked={},
+        left_out=(),
+    )
+    found = Stability(np.array([0.25, 0.0, 0.75]), np.array([0.1, 0.0, 0.6]), 400, "around the weights of the meeting")
+
+    assert stability_words(scores, found) == (
+        "Of 400 weight sets drawn around the weights of the meeting: R454C comes first in 75 % of them (60 % alone); "
+        "R448A comes first in 25 % of them (10 % alone)."
+    )

@@ -274,6 +274,7 @@ def test_the_json_carries_rows_tables_and_dates_as_text(assessed):
         "eu-517-2014.toml",
         "eu-ods.toml",
         "eu-pfas-proposal.toml",
+        "eu-tfa.toml",
     }
     assert all(row["line"] and row["document"] and row["date_checked"] == "2026-12-01" for row in rows)
     last = data["candidates"][0]["law"]["timeline"][-1]

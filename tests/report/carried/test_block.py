@@ -338,7 +338,7 @@ def test_a_result_that_no_report_holds_is_refused_before_anything_is_computed(ch
 
     with pytest.raises(ReportError, match=why) as found:
         read_carried(path)
-    assert time.perf_counter() - begun < 5.0  # it took a minute to read a huge list; a second is usual here
+    assert time.perf_counter() - begun < 20.0  # reading a list of 60 MB takes over a minute, refusing it a second
     assert len(found.value.message) < 600
 
 

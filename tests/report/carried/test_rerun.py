@@ -191,9 +191,9 @@ def test_what_an_altered_file_says_reaches_no_terminal_unescaped(html, edited, a
 # The comparison itself, by hand
 
 RESULT = {
-    "existing": {"refrigerant": "R404A", "verdict": "suits", "duty": {"cop": 2.0, "T_discharge_K": 340.0}},
+    "existing": {"refrigerant": "R404A", "verdict": "suitable", "duty": {"cop": 2.0, "T_discharge_K": 340.0}},
     "candidates": [
-        {"refrigerant": "R448A", "verdict": "suits", "duty": {"cop": 2.5, "glide_evap_K": 0.0, "unmet_W": 0.0}}
+        {"refrigerant": "R448A", "verdict": "suitable", "duty": {"cop": 2.5, "glide_evap_K": 0.0, "unmet_W": 0.0}}
     ],
     "law": None,
 }
@@ -220,7 +220,7 @@ R448A = ("candidates", 0, "duty")
         ((*R448A, "glide_evap_K"), 0.0031, True),
         ((*R448A, "unmet_W"), 0.009, False),  # 1e-5 of 1 kW
         ((*R448A, "cop"), None, True),
-        (("candidates", 0, "verdict"), "does not suit", True),
+        (("candidates", 0, "verdict"), "not suitable", True),
         (("law",), {"on": "2026-12-01"}, True),
         ((*R448A, "unmet_W"), False, True),
     ],
@@ -234,7 +234,7 @@ def test_the_weightiest_stands_first():
     """A verdict before any number, a large change before a small one."""
     new = _changed(*R448A, "cop", to=5.0)
     new["existing"]["duty"]["T_discharge_K"] = 341.0
-    new["candidates"][0]["verdict"] = "does not suit"
+    new["candidates"][0]["verdict"] = "not suitable"
 
     assert [item.quantity for item in differences(RESULT, new)] == ["verdict", "duty.cop", "duty.T_discharge_K"]
 
