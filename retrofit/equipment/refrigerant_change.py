@@ -50,11 +50,21 @@ class Efficiencies(Protocol):
     """Isentropic and volumetric efficiency of a compressor with one refrigerant."""
 
     def at(self, pressure_ratio: ArrayLike, p_suction_Pa: ArrayLike | None = None) -> Pair:
-        """Return isentropic and volumetric efficiency. [-]"""
+        """Return isentropic and volumetric efficiency. [-]
+
+        Args:
+            pressure_ratio: Discharge over suction pressure. [-]
+            p_suction_Pa: Suction pressure. [Pa]
+        """
         ...
 
     def covers(self, pressure_ratio: ArrayLike, p_suction_Pa: ArrayLike | None = None) -> NDArray[np.bool_]:
-        """Return where the data reach."""
+        """Return where the data reach.
+
+        Args:
+            pressure_ratio: Discharge over suction pressure. [-]
+            p_suction_Pa: Suction pressure. [Pa]
+        """
         ...
 
 
