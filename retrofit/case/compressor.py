@@ -11,8 +11,16 @@ from retrofit.case.table import Items, Table, WhyDefault, key
 from retrofit.case.values import Choice, Quantity
 
 MOST_POINTS = 50
+UNKNOWN_KIND = "unknown"
+KINDS = ("piston", "scroll", "screw", "rotary", "centrifugal", UNKNOWN_KIND)
+TERMINALS, SHAFT = "terminals", "shaft"
 _OTHER_WAYS = ("efficiency_points", "polynomial")
 _ORDINARY = WhyDefault("an ordinary value, the same for every refrigerant", unless=_OTHER_WAYS)
+_NO_KIND = WhyDefault(
+    "without it the efficiencies of the case are constants, the same for every refrigerant, and the bands are wide; "
+    "efficiency points or a polynomial carry over by the compressor's own curve all the same"
+)
+_AT_TERMINALS = WhyDefault("makers state the power of hermetic compressors with their motor", beside="polynomial")
 _EFFICIENCY = Quantity(
     "fraction", "10 %", "100 %", "below it no plant can run, and no machine does better than the ideal one",
     example="0.70",
@@ -49,7 +57,7 @@ class Polynomial(Table):
     )
     capacity: _TEN = key("capacity", "Ten coefficients of the cooling capacity, in W or Btu/h.", None)
     mass_flow: _TEN = key("mass_flow", "Ten coefficients of the mass flow, in kg/h or lb/h.", None)
-    power: _TEN = key("power", "Ten coefficients of the electrical power, in W.", None)
+    power: _TEN = key("power", "Ten coefficients of the power, in W; `power_at` in [compressor] says where.", None)
     current: _TEN = key("current", "Ten coefficients of the current, in A.", None)
     voltage_V: Annotated[float | None, VOLTAGE] = key("voltage", "Voltage at which the current is stated.", None)
     phases: Annotated[int | None, PHASES] = key("phases", "Phases of the supply, 1 or 3.", None)
@@ -70,10 +78,18 @@ class Polynomial(Table):
 class Compressor(Table):
     """The existing compressors taken together.
 
-    With `efficiency_points` or a `polynomial` the two constant efficiencies mean nothing: the file then
-    gives neither, no default counts as taken, and whoever computes uses the points or the polynomial.
+    `kind` says how both efficiencies change with the refrigerant; without it they are constants, alike for all, unless
+    points or a polynomial give the compressor's own curve. With `efficiency_points` or a `polynomial` the two constant
+    efficiencies mean nothing: the file then gives neither, no default counts as taken, and whoever computes uses the
+    points or the polynomial.
     """
 
+    kind: Annotated[str, Choice(KINDS), _NO_KIND] = key(
+        "kind",
+        "Kind of compressor: with it efficiencies follow the refrigerant; unknown widens the band.",
+        UNKNOWN_KIND,
+        where="nameplate of the compressor",
+    )
     isentropic_efficiency: Annotated[float, _EFFICIENCY, _ORDINARY] = key(
         "isentropic_efficiency", "Isentropic work over real work.", "0.70"
     )
@@ -94,7 +110,17 @@ class Compressor(Table):
     motor_efficiency: Annotated[
         float | None,
         Quantity("fraction", "10 %", "100 %", "a motor in use lies within it", example="0.92"),
-    ] = key("motor_efficiency", "Shaft power over electrical power.", None)
+    ] = key("motor_efficiency", "Shaft power over electrical power of the motor.", None)
+    drive_efficiency: Annotated[
+        float | None,
+        Quantity("fraction", "10 %", "100 %", "a drive in use lies within it", example="0.96"),
+    ] = key("drive_efficiency", "Electrical power out of the frequency converter over power into it.", None)
+    power_at: Annotated[str, Choice((TERMINALS, SHAFT)), _AT_TERMINALS] = key(
+        "power_at",
+        "Where the power of the polynomial is taken: at the motor's terminals (hermetic machines) or at the shaft.",
+        TERMINALS,
+        where="data sheet of the compressor",
+    )
     heat_loss: Annotated[
         float | None, Quantity("fraction", "0 %", "90 %", "the gas keeps some of the heat", example="5 %")
     ] = key("heat_loss", "Share of the compressor power that leaves through the shell.", None)
@@ -125,3 +151,22 @@ class Compressor(Table):
         None,
         where="log of the controls at pull-down, or the setting of the crankcase regulator",
     )
+
+    @property
+    def motor_is_inside(self) -> bool:
+        """Return whether the isentropic efficiency holds the losses of the motor: a polynomial's does at the terminals.
+
+        A current is one at the terminals.
+        """
+        return self.polynomial is not None and (self.power_at != SHAFT or self.polynomial.current is not None)
+
+    @property
+    def motor_and_drive(self) -> float | None:
+        """Return power by the isentropic efficiency over electrical power, each loss counted once; None if not known.
+
+        Source: product of the efficiencies of motor and drive that the isentropic efficiency does not hold.
+        """
+        motor = None if self.motor_is_inside else self.motor_efficiency
+        if motor is None and self.drive_efficiency is None:
+            return None
+        return (1.0 if motor is None else motor) * (1.0 if self.drive_efficiency is None else self.drive_efficiency)

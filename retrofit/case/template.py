@@ -47,11 +47,14 @@ line_superheat = "5 K"           # picked up after it: it cools nothing, but the
 subcooling = "3 K"               # below the bubble point, at the expansion valve
 
 [compressor]
+# kind = "piston"                # piston, scroll, screw, rotary, centrifugal or unknown: see README
 isentropic_efficiency = 0.70
 volumetric_efficiency = 0.90
 #| efficiency_points = [[2, 0.62, 0.92], [4, 0.70, 0.86], [8, 0.66, 0.74]]   # pressure ratio, both efficiencies
 # swept_volume = "100 m3/h"      # all compressors at the speed they run
 # motor_efficiency = 0.92        # shaft over electrical power
+# drive_efficiency = 0.96        # of a frequency converter
+#| power_at = "terminals"        # of a polynomial: terminals (hermetic: motor in it) or shaft
 # heat_loss = "5 %"              # share of the compressor power that leaves through the shell
 # speed = "variable"             # fixed, steps or variable
 # lowest_speed = "30 %"          # with variable

@@ -15,7 +15,7 @@ from retrofit.case import Report
 from retrofit.checks.answer import open_words, question_of
 from retrofit.checks.gates import cooling_reached
 from retrofit.study import Comparison, Entry, Family, Finding, Verdict
-from retrofit.study.bands import model_band, pair_band
+from retrofit.study.bands import pair_bands
 from retrofit.study.law import RowState
 from retrofit.units import UnitSystem, told
 
@@ -242,7 +242,7 @@ def _speaks_for(comparison: Comparison, entry: Entry, units: UnitSystem) -> Iter
         yield "no change of refrigerant, oil or components"
         return
     reached = cooling_reached(comparison, entry)
-    band = {name: pair_band(comparison.existing, entry, name) for name in model_band()}
+    band = {name: found.value for name, found in pair_bands(comparison.existing, entry).items()}
     if reached is not None:
         share = reached[0] / reached[1]
         if share > 1.0 + band["capacity"]:

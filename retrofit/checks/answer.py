@@ -10,7 +10,7 @@ from retrofit.checks.reading_words import contradiction_words, duty_words
 from retrofit.checks.readings import Duty, duty_held
 from retrofit.refrigerants import change_cautions
 from retrofit.study import Comparison, Entry, Family, Finding, Verdict
-from retrofit.study.bands import groups_alike, on_the_plant, pair_band
+from retrofit.study.bands import groups_alike, on_the_plant, pair_band, percent_text
 from retrofit.units import UnitSystem, listed, told
 
 # In the order of the headline: what may be done comes before what may not.
@@ -195,7 +195,7 @@ def _capacity(comparison: Comparison, solved: Sequence[Entry]) -> Matter:
     """Return the matter of cooling: on the plant as installed where that could be computed, and saying which."""
     old, needed = comparison.existing.refrigerant.designation, capacity_needed_W(comparison)
     held = Held(comparison, solved, "capacity")
-    band, within = held.band, f"{held.narrowest:.0%}"
+    band, within = held.band, percent_text(held.narrowest)
     # What is needed is at most what the plant gives: a duty beyond that is not met by a candidate that gives as much.
     measure = "today's plant gives" if duty_held(comparison).state == Duty.ABOVE else "needed"
     is_mixed = len({entry.plant is None for entry in solved}) > 1
@@ -239,7 +239,7 @@ def _installed(comparison: Comparison, solved: Sequence[Entry], units: UnitSyste
     if not operations:
         return Matter("The plant as installed", ())
     needed, held = operations[0].cooling_needed_W, Held(comparison, solved, "capacity")
-    band, within = held.band, f"{held.narrowest:.0%}"
+    band, within = held.band, percent_text(held.narrowest)
 
     def lacks(entry: Entry) -> float:
         return entry.plant.operation.unmet_W / needed if entry.plant else -1.0
@@ -409,12 +409,12 @@ class Held:
         """Return the narrowest of these bands, which the words of a group state. [- or K]"""
         return min(self.band(entry) for entry in self.solved)
 
-    def own(self, entry: Entry, show: Callable[[float], str] = "{:.0%}".format) -> str:
+    def own(self, entry: Entry, show: Callable[[float], str] = percent_text) -> str:
         """Return what follows the amount of a candidate whose band is wider than the one stated."""
         band = self.band(entry)
         return f", its band ±{show(band)}" if band > self.narrowest else ""
 
-    def within(self, show: Callable[[float], str] = "{:.0%}".format) -> str:
+    def within(self, show: Callable[[float], str] = percent_text) -> str:
         """Return inside of what there is no meaningful difference, in words."""
         is_one = all(self.band(entry) == self.narrowest for entry in self.solved)
         return f"within ±{show(self.narrowest)}{'' if is_one else ', or the band named'}"

@@ -7,7 +7,7 @@ from dataclasses import dataclass
 
 from retrofit.checks.thresholds import thresholds_for
 from retrofit.study import Comparison, Entry, Verdict
-from retrofit.study.bands import QUANTITIES, bands_of
+from retrofit.study.bands import QUANTITIES, pair_bands
 from retrofit.study.changeover import Bands, Changeover, changeover
 
 MOST_CARDS = 3  # so that the report of a case with many candidates does not grow without bound
@@ -78,7 +78,7 @@ def changeover_of(comparison: Comparison, entry: Entry, T_inlet_today_K: float |
         entry: The candidate.
         T_inlet_today_K: Temperature at the inlet of the condenser on the day, None to leave it out. [K]
     """
-    band, oil = bands_of(entry), thresholds_for(comparison.case)["residual_oil"]
+    band, oil = pair_bands(comparison.existing, entry), thresholds_for(comparison.case)["residual_oil"]
     power = band[QUANTITIES["power"][0]].value
     bands = Bands(band["pressure"].value, power, band["T_discharge"].value)
     return changeover(comparison, entry, bands, sorted(oil.figures.values()), T_inlet_today_K)

@@ -23,7 +23,7 @@ from retrofit.checks.operating import (
 from retrofit.checks.room.change import asked_text
 from retrofit.refrigerants import change_cautions, parse_safety_class
 from retrofit.study import Comparison, Entry, Family, Finding, Level, Performance
-from retrofit.study.bands import pair_band
+from retrofit.study.bands import pair_band, percent_text
 from retrofit.units import listed, quantity
 
 # The catalogue's short names of oil families, and the words of the case file.
@@ -139,7 +139,7 @@ def capacity(comparison: Comparison, entry: Entry) -> Iterator[Finding]:
     level = limit.level_below(share + UNSEEN)
     if level is None:
         return
-    doubt = f" The shortfall lies within the ±{band:.0%} of the model." if share > 1.0 - band else ""
+    doubt = f" The shortfall lies within the ±{percent_text(band)} of the model." if share > 1.0 - band else ""
     yield Finding(
         "capacity",
         level,

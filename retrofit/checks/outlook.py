@@ -40,7 +40,7 @@ from retrofit.checks.prospects import (
     ranked,
 )
 from retrofit.study import Comparison, Level
-from retrofit.study.bands import model_band
+from retrofit.study.bands import best_evidence, model_band, percent_text
 from retrofit.study.emissions import Tewi
 from retrofit.study.life import CAPACITY, Swing
 from retrofit.study.money import Payback, PaybackState, abatement_of
@@ -261,13 +261,14 @@ def _energy(options: tuple[Prospect, ...], units: UnitSystem) -> Matter:
         return Matter("Electricity of a year", ())
     as_is = options[0]
     today = energy_text(units, as_is.year.energy_J if as_is.year else None)
-    words = ("less", f"no meaningful difference, {_within()}", "more")
+    words = ("less", f"no meaningful difference, {_within(options)}", "more")
     found = _by_difference(options, "energy", words, lambda p: percent(difference(as_is, p, "energy").ratio))
     return Matter(f"Electricity of a year, against {today} with {as_is.name} as it is", found)
 
 
-def _within() -> str:
-    return f"within the band of the model, ±{100 * model_band()['cop'].value:.0f}{NBSP}% or its own wider one"
+def _within(options: Sequence[Prospect]) -> str:
+    band = model_band(evidence=best_evidence([option.entry for option in options]))["cop"].value
+    return f"within the band of the model, ±{percent_text(band).replace('%', NBSP + '%')} or its own wider one"
 
 
 def _alike(options: Sequence[Prospect], quantity: str) -> Matter:
@@ -354,7 +355,7 @@ def _emissions(options: tuple[Prospect, ...]) -> Matter:
     if all(option.account.tewi.total_kg is None for option in options):
         return Matter("Warming", ())
     today = tonnes(None if warming.total_kg is None else float(warming.total_kg))
-    words = ("less", f"no meaningful difference, {_within()} in the electricity", "more")
+    words = ("less", f"no meaningful difference, {_within(options)} in the electricity", "more")
     found = _by_difference(options, "emissions", words, lambda p: percent(difference(as_is, p, "emissions").ratio))
     return Matter(f"Warming over {life_text(warming)} (TEWI), against {today} with {as_is.name} as it is", found)
 
@@ -398,7 +399,7 @@ def _sorted(found: dict[str, list[str]]) -> Groups:
 
 
 def _present_values(comparison: Comparison, options: tuple[Prospect, ...]) -> Groups:
-    saves, near, costs = "saves money", f"no meaningful difference, {_within()} in the electricity", "costs more"
+    saves, near, costs = "saves money", f"no meaningful difference, {_within(options)} in the electricity", "costs more"
     found: dict[str, list[str]] = {saves: [], near: [], costs: []}
     for option in options[1:]:
         lead = headline(option, "npv")

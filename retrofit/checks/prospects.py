@@ -10,7 +10,7 @@ import numpy as np
 from retrofit.checks.money_words import NO_LIFE, missing_items_words
 from retrofit.study import Comparison, Entry
 from retrofit.study.accounts import Account
-from retrofit.study.bands import alike, band_of, groups_alike
+from retrofit.study.bands import alike, groups_alike, pair_band
 from retrofit.study.criteria import criteria
 from retrofit.study.life import Certainty, Life
 from retrofit.study.money import Payback, payback_of
@@ -366,8 +366,7 @@ def ranked(comparison: Comparison) -> Ranked:
     life = life_of_result(comparison)
     uses = {name: Use(year.energy_J, year.peak_W) for name, year in life.years.items()}
     measured = criteria(comparison, life.accounts, uses)
-    bands = {entry.refrigerant.designation: band_of(entry, "cop") for entry in comparison.entries if entry.duty}
-    scores = score(comparison, measured, bands)
+    scores = score(comparison, measured, lambda a, b: pair_band(a, b, "cop"))
     if not scores.names or not scores.criteria:
         return Ranked(scores, order(scores), None, None)
     stability = rank_stability(scores.scores, doubts=scores.doubts)

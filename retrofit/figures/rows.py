@@ -10,7 +10,7 @@ from retrofit.checks import threshold
 from retrofit.figures.drawing import Drawing, canvas, to_svg
 from retrofit.figures.style import HAIRLINE, INK, LABEL_PT, SMALL_PT, THIN, mark_at
 from retrofit.study import Comparison, Entry
-from retrofit.study.bands import band_of, model_band, pair_band
+from retrofit.study.bands import band_of, base_bands, pair_band
 from retrofit.units import ZERO_C_K, UnitSystem, format_number, listed
 
 ROW_IN, FRAME_IN = 0.2, 0.74
@@ -165,7 +165,7 @@ def change_charts(comparison: Comparison) -> tuple[Drawing, ...]:
 
 
 def _changes(comparison: Comparison, name: str, title: str, panels: tuple[Panel, Panel], caption: str) -> Drawing:
-    bands = [100.0 * model_band()[panel.band].value for panel in panels]
+    bands = [100.0 * base_bands(comparison)[panel.band].value for panel in panels]
     caption += _wider_words(comparison, panels)
     with canvas(_height(comparison), *MARGINS_IN) as figure:
         both = figure.subplots(1, 2, sharey=True, gridspec_kw={"wspace": 0.1})
@@ -199,7 +199,7 @@ def _panel(axes: Any, comparison: Comparison, panel: Panel, band: float) -> list
         elif entry.duty is not None:
             _not_computed(axes, place)
     axes.set_xlabel(panel.label)
-    text = f"±{band:.0f} %: no meaningful difference"
+    text = f"±{band:.3g} %: no meaningful difference"
     axes.annotate(text, (0.0, 1.0), (0, 3), xycoords=("data", "axes fraction"), textcoords="offset points",
                   ha="center", va="bottom", fontsize=SMALL_PT)  # fmt: skip
     return values
@@ -208,7 +208,7 @@ def _panel(axes: Any, comparison: Comparison, panel: Panel, band: float) -> list
 def _panel_band(comparison: Comparison, entry: Entry, panel: Panel) -> float:
     """Return the band of a row; the existing refrigerant, which is the zero line, has none of its own."""
     today = comparison.existing
-    return model_band()[panel.band].value if entry is today else pair_band(today, entry, panel.band)
+    return base_bands(comparison)[panel.band].value if entry is today else pair_band(today, entry, panel.band)
 
 
 def _own_zone(axes: Any, place: int, band: float, base: float) -> list[float]:
@@ -229,12 +229,16 @@ def _wider_words(comparison: Comparison, panels: tuple[Panel, Panel]) -> str:
             for panel in panels
         }
         if entry.duty is not None and any(
-            _panel_band(comparison, entry, p) > model_band()[p.band].value for p in panels
+            _panel_band(comparison, entry, p) > base_bands(comparison)[p.band].value for p in panels
         ):
-            words = " and ".join(f"{name} ±{100.0 * band:.0f} %" for name, band in bands.items())
+            words = " and ".join(f"{name} ±{100.0 * band:.3g} %" for name, band in bands.items())
             found.setdefault(words, []).append(entry.refrigerant.display_name)
     rows = "; ".join(f"{listed(names, 'and')}: {words}" for words, names in found.items())
-    return f" Wider in its row where the model of a refrigerant, or of today's, is worse: {rows}." if rows else ""
+    return (
+        f" Wider in its row where the model of a refrigerant, or of the compressor with it, is less certain: {rows}."
+        if rows
+        else ""
+    )
 
 
 def _change_words(entry: Entry, panels: tuple[Panel, Panel]) -> str:

@@ -13,7 +13,7 @@ from retrofit.figures.drawing import Drawing, canvas, to_svg
 from retrofit.figures.labels import end_labels, label_of, mark_in, thousands, upright
 from retrofit.figures.style import HAIRLINE, INK, SMALL_PT, THIN
 from retrofit.study import Comparison
-from retrofit.study.bands import model_band
+from retrofit.study.bands import base_bands, percent_text
 from retrofit.study.result import FloatArray
 from retrofit.study.year import PlantMap, YearConditions, YearRun, load_W
 from retrofit.units import UnitSystem, format_number
@@ -50,7 +50,7 @@ def energy_chart(comparison: Comparison, units: UnitSystem) -> Drawing | None:
     base = units.number("energy", _known(steps.of(today)))
     drawn = [(option, steps.of(option.year)) for option in options[1:] if option.year is not None]
     found = [(option, units.number("energy", values) - base) for option, values in drawn if values is not None]
-    band = model_band()["cop"].value
+    band = base_bands(comparison)["cop"].value
     label, name = units.label("energy"), label_of(options[0])
     left, right = MARGINS_IN
     with canvas(3.2, left, right, 0.26, 0.46 if steps.label else 0.26) as figure:
@@ -78,7 +78,8 @@ def _energy_caption(options: Sequence[Prospect], name: str, steps: Steps, band: 
     more = f" Not drawn, not known step by step: {', '.join(left_out)}." if left_out else ""
     return (
         f"Electricity by {by}: with {name} as it is (above), and what each option takes more or less (below). Inside "
-        f"the grey band, ±{band:.0%} of the bar above, the difference is smaller than what the model can tell.{more}"
+        f"the grey band, ±{percent_text(band)} of the bar above, the difference is smaller than what the model can "
+        f"tell.{more}"
     ).replace("%", "\N{NO-BREAK SPACE}%")
 
 
@@ -215,10 +216,10 @@ def ambient_chart(comparison: Comparison, units: UnitSystem) -> Drawing | None:
         x = _outdoors(maps[0][1], axis, units)
         capacity = [(option, _capacity(found, asked.serves, axis, units)) for option, found in maps]
         _load(comparison, upper, axis, x, units)
-        _with_band(comparison, upper, x, capacity, model_band()["capacity"].value, is_share=True)
+        _with_band(comparison, upper, x, capacity, base_bands(comparison)["capacity"].value, is_share=True)
         upper.set_ylabel(f"{'Heat' if asked.serves == 'heating' else 'Cooling'} at full [{units.label('cooling')}]")
         hot = [(option, np.asarray(units.number("temperature", along(f, f.T_discharge_K, axis)))) for option, f in maps]
-        band_K = model_band()["T_discharge"].value
+        band_K = base_bands(comparison)["T_discharge"].value
         step = float(units.number("temperature difference", band_K))
         _with_band(comparison, lower, x, hot, step, is_share=False)
         lower.set_ylabel(f"Discharge [{units.label('temperature')}]")
@@ -297,7 +298,7 @@ def _first_and_last(values: FloatArray) -> str:
 def _ambient_caption(
     comparison: Comparison, options: Sequence[Prospect], axis: Axis, units: UnitSystem, serves: str
 ) -> str:
-    band, held = model_band(), units.with_unit("temperature", axis.held_K)
+    band, held = base_bands(comparison), units.with_unit("temperature", axis.held_K)
     difference = units.with_unit("temperature difference", band["T_discharge"].value, decimals=0)
     new = [label_of(option) for option in options if option.deed == "new plant" and option.year and option.year.map]
     sized = f" {', '.join(new)}: a new plant of today's size." if new else ""
@@ -308,6 +309,6 @@ def _ambient_caption(
     return (
         f"What the plant does at full as it gets hotter outside, with {held} at the inlet of the {other}: "
         f"{'heat' if serves == 'heating' else 'cooling'} (above) and discharge temperature (below). The grey band "
-        f"around today's line, ±{band['capacity'].value:.0%} and ±{difference}, is as far as the model can tell two "
-        f"lines apart.{load}{sized}{left_out}"
+        f"around today's line, ±{percent_text(band['capacity'].value)} and ±{difference}, is as far as the model can "
+        f"tell two lines apart.{load}{sized}{left_out}"
     ).replace("%", "\N{NO-BREAK SPACE}%")

@@ -11,7 +11,7 @@ from retrofit.meeting.state import State
 from retrofit.report.judging import spelled
 from retrofit.study import Comparison
 from retrofit.study.accounts import accounts
-from retrofit.study.bands import band_of
+from retrofit.study.bands import pair_band
 from retrofit.study.criteria import CRITERIA, criteria
 from retrofit.study.plan import Use
 from retrofit.study.ranking import (
@@ -93,8 +93,7 @@ def weighing(view: Comparison, state: State) -> Weighing:
     weights = {name: float(dict(state.weights).get(name, USUAL)) for name in CRITERIA}
     uses = {name: Use(year.energy_J, year.peak_W) for name, year in view.life.years.items()} if view.life else {}
     measured = criteria(view, accounts(view, uses), uses, index=1)
-    bands = {entry.refrigerant.designation: band_of(entry, "cop") for entry in view.entries}
-    scores = score(view, measured, bands)
+    scores = score(view, measured, lambda a, b: pair_band(a, b, "cop"))
     found = order(scores, weights)
     used = [weights[name] for name in scores.criteria]
     stabilities = [

@@ -15,8 +15,13 @@ SIGN = "†"
 _CYCLE = ("duty.reading", "compare.match")
 _SUPERHEATS = ("duty.useful_superheat", "duty.line_superheat")
 _EFFECTS = (*_CYCLE, *_SUPERHEATS, "duty.subcooling")
-_MACHINE = ("compressor.isentropic_efficiency", "compressor.volumetric_efficiency", "compressor.heat_loss")
-_DRIVE = ("compressor.motor_efficiency",)  # from readings, or not there
+_MACHINE = (
+    "compressor.kind",
+    "compressor.isentropic_efficiency",
+    "compressor.volumetric_efficiency",
+    "compressor.heat_loss",
+)
+_DRIVE = ("compressor.motor_efficiency", "compressor.drive_efficiency")  # from readings, or not there
 _EXCHANGERS = tuple(f"{way}.{key}" for way in ("evaporator", "condenser") for key in ("film_factor", "pressure_drop"))
 _PLANT = (*_EFFECTS, *_MACHINE, *_EXCHANGERS, "evaporator.specific_heat", "condenser.specific_heat")
 _ALL = (*_PLANT, *_DRIVE, "year", "emissions", "options")

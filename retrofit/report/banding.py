@@ -6,12 +6,12 @@ from collections.abc import Mapping
 
 from retrofit.report.judging import spelled
 from retrofit.study import Comparison
-from retrofit.study.bands import Band, bands_of, is_wider, model_band
+from retrofit.study.bands import Band, base_bands, left_out, pair_bands, percent_text
 from retrofit.units import UnitSystem
 
 
 def bands_text(bands: Mapping[str, Band], units: UnitSystem) -> str:
-    """Return bands as running text, such as "capacity ±7%, COP ±6%, discharge temperature ±8 K, pressures ±2%".
+    """Return bands as running text, such as "capacity ±6%, COP ±8%, discharge temperature ±8 K, pressures ±2%".
 
     Args:
         bands: The four bands.
@@ -19,8 +19,8 @@ def bands_text(bands: Mapping[str, Band], units: UnitSystem) -> str:
     """
     discharge = units.with_unit("temperature difference", bands["T_discharge"].value, decimals=0)
     return (
-        f"capacity ±{bands['capacity'].value:.0%}, COP ±{bands['cop'].value:.0%}, discharge temperature ±{discharge}, "
-        f"pressures ±{bands['pressure'].value:.0%}"
+        f"capacity ±{percent_text(bands['capacity'].value)}, COP ±{percent_text(bands['cop'].value)}, "
+        f"discharge temperature ±{discharge}, pressures ±{percent_text(bands['pressure'].value)}"
     )
 
 
@@ -31,14 +31,23 @@ def wider_texts(comparison: Comparison, units: UnitSystem) -> tuple[str, ...]:
         comparison: The result.
         units: The reader's units.
     """
-    found: dict[str, list[str]] = {}
-    for entry in comparison.entries:
-        if entry.duty is not None and is_wider(entry):
-            bands = bands_of(entry)
-            offset = units.with_unit("temperature difference", bands["pressure"].offset_K, decimals=1)
-            sentence = f"{bands_text(bands, units)}: {bands['pressure'].reason}, {offset} at the boiling point."
-            found.setdefault(sentence, []).append(entry.refrigerant.designation)
+    base, found = base_bands(comparison), dict[str, list[str]]()
+    for entry in comparison.candidates:
+        if entry.duty is None:
+            continue
+        bands = pair_bands(comparison.existing, entry)
+        if any(band.value > base[name].value for name, band in bands.items()):
+            found.setdefault(_wider(bands, base, units), []).append(entry.refrigerant.designation)
     return tuple(f"Wider for {', '.join(names)}: {sentence}" for sentence, names in found.items())
+
+
+def _wider(bands: Mapping[str, Band], base: Mapping[str, Band], units: UnitSystem) -> str:
+    """Return bands with the reasons why they are wider than the base: the compressor's, the blend model's."""
+    reasons = [] if bands["cop"].evidence_reason == base["cop"].evidence_reason else [bands["cop"].evidence_reason]
+    if bands["pressure"].offset_K:
+        offset = units.with_unit("temperature difference", bands["pressure"].offset_K, decimals=1)
+        reasons.append(f"{bands['pressure'].reason}, {offset} at the boiling point")
+    return f"{bands_text(bands, units)}: {'; '.join(reasons)}."
 
 
 def band_text(comparison: Comparison, units: UnitSystem) -> str:
@@ -48,8 +57,9 @@ def band_text(comparison: Comparison, units: UnitSystem) -> str:
         comparison: The result.
         units: The reader's units.
     """
+    base = base_bands(comparison)
     sentences = (
-        f"Band of the model: {bands_text(model_band(), units)}.",
+        f"Band of the model, 90%: {bands_text(base, units)}; {base['cop'].evidence_reason}; {left_out()}.",
         *wider_texts(comparison, units),
         "A difference inside the band is no meaningful difference; in the tables it carries the sign ≈.",
     )

@@ -215,7 +215,7 @@ def _drawn(item: Uncertain, units: UnitSystem, money: str) -> Drawn:
         unit = units.label(item.kind)
     else:
         texts, unit = [rounded_text(value) for value in (base, low, high)], money
-    shape = "triangular" if item.is_triangular else "rectangular"
+    shape = item.distribution
     base_text, low_text, high_text = texts
     name, origin = plain(spelled(item.name)), ORIGINS[item.origin]
     return Drawn(item.key, name, base_text, low_text, high_text, unit, shape, origin, spelled(item.why))

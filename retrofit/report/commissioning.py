@@ -16,7 +16,7 @@ from retrofit.report.agreeing import calibration_text
 from retrofit.report.jobcard import UNKNOWN, Job, span
 from retrofit.report.judging import spelled
 from retrofit.report.values import potential_text
-from retrofit.study.bands import QUANTITIES, bands_of
+from retrofit.study.bands import QUANTITIES, pair_bands, percent_text
 from retrofit.study.changeover import DRAWS, Expected, PressureRow, Window, operating_span, pressure_rows
 from retrofit.study.hardware.settings import SET_POINTS
 from retrofit.study.practice import practice
@@ -304,15 +304,15 @@ def _ends(window: Window, show: Callable[[float], str]) -> str:
 
 
 def _window_notes(job: Job, expected: Sequence[Expected]) -> tuple[str, ...]:
-    band, numbers = bands_of(job.entry), job.entry.hardware_numbers
+    band, numbers = pair_bands(job.comparison.existing, job.entry), job.entry.hardware_numbers
     discharge = job.units.with_unit("temperature difference", band["T_discharge"].value, decimals=0)
     notes = [
         _limit_note(job, expected),
         spelled(
             f"Existing compressor and exchangers balanced at full load. A window holds the 10th to 90th percentile of "
             f"{DRAWS} samples of the inputs within their limits, and the band of the model: pressure "
-            f"±{band['pressure'].value:.0%}, discharge ±{discharge}, power and current "
-            f"±{band[QUANTITIES['power'][0]].value:.0%}."
+            f"±{percent_text(band['pressure'].value)}, discharge ±{discharge}, power and current "
+            f"±{percent_text(band[QUANTITIES['power'][0]].value)}."
         ),
         "Part load, dirt, stopped fans and line losses move readings further.",
     ]

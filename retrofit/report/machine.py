@@ -14,7 +14,7 @@ from retrofit.properties import Grade
 from retrofit.refrigerants import GWP_BASES, Refrigerant
 from retrofit.report.machine_agreement import agreement_json
 from retrofit.study import Baseline, Comparison, Component, Entry, Finding, Installed, Performance, Point
-from retrofit.study.bands import bands_of
+from retrofit.study.bands import pair_bands
 from retrofit.study.compare import RATIOS
 from retrofit.study.law import LawBasis, LawCheck, LawRow, Reason
 from retrofit.study.law_words import DEFERENCE, line, moment_text, problems, reason_text
@@ -60,8 +60,8 @@ def comparison_json(comparison: Comparison) -> dict[str, Any]:
             "swept_volume_from": comparison.swept_volume_from,
             "quality": "vapour mass fraction; molar_quality is the mole fraction",
         },
-        "existing": _entry(comparison.existing),
-        "candidates": [_entry(entry) for entry in comparison.candidates],
+        "existing": _entry(comparison.existing, comparison.existing),
+        "candidates": [_entry(comparison.existing, entry) for entry in comparison.candidates],
         "defaults": [asdict(default) for default in case.defaults],
         "open": [_open(item) for item in survey(comparison)],
         "baseline": _baseline(comparison.baseline),
@@ -139,7 +139,7 @@ def _finding(finding: Finding) -> dict[str, Any]:
     return asdict(finding) | {"text": finding.text}
 
 
-def _entry(entry: Entry) -> dict[str, Any]:
+def _entry(existing: Entry, entry: Entry) -> dict[str, Any]:
     return {
         "refrigerant": entry.refrigerant.designation,
         "family": entry.family,
@@ -148,7 +148,7 @@ def _entry(entry: Entry) -> dict[str, Any]:
         "safety_class": entry.refrigerant.safety_class.value,
         **gwp_values(entry.refrigerant),
         "model": _grade(entry.grade),
-        "bands": _bands(entry),
+        "bands": _bands(existing, entry),
         "duty": _performance(entry.duty, entry.points),
         "compressor": _performance(entry.compressor, entry.points),
         "plant": _plant(entry.plant),
@@ -201,12 +201,14 @@ def _grade(grade: Grade | None) -> dict[str, Any] | None:
     }
 
 
-def _bands(entry: Entry) -> dict[str, Any]:
-    """Return how far the numbers of a refrigerant can be off, relative and in kelvin, and why that far."""
-    bands = bands_of(entry)
+def _bands(existing: Entry, entry: Entry) -> dict[str, Any]:
+    """Return the 90 % bands of ratios to the existing refrigerant, relative and in kelvin, and why that wide."""
+    bands = pair_bands(existing, entry)
     names = {"T_discharge": "T_discharge_K"}
     deciding = bands["pressure"]
     return {names.get(name, name): band.value for name, band in bands.items()} | {
+        "evidence": entry.evidence,
+        "evidence_reason": bands["cop"].evidence_reason,
         "boiling_point_offset_K": deciding.offset_K,
         "reason": deciding.reason,
     }

@@ -129,7 +129,7 @@ def _input(item: Uncertain) -> dict[str, Any]:
         "name": item.name,
         "kind": item.kind or "currency",
         **_spread(item.spread),
-        "distribution": "triangular" if item.is_triangular else "rectangular",
+        "distribution": item.distribution,
         "origin": item.origin,
         "why": item.why,
     }

@@ -123,7 +123,7 @@ def _full(comparison: Comparison, units: UnitSystem) -> tuple[Row, ...]:
 
 def _electric_rows(comparison: Comparison, units: UnitSystem, label: str, name: str) -> tuple[Row, ...]:
     """Return the row of an electrical power, if losses of motor and drive are known: else it is the power above."""
-    if comparison.case.compressor.motor_efficiency is None:
+    if comparison.case.compressor.motor_and_drive is None:
         return ()
     return (quantity_row(label, "power", _values(comparison, name), units),)
 

@@ -21,7 +21,7 @@ from retrofit.report.terminal_plant import (
 from retrofit.report.terminal_site import law_text, room_text
 from retrofit.report.text_table import Column, paragraph, text_table
 from retrofit.study import Comparison, Entry
-from retrofit.study.bands import model_band
+from retrofit.study.bands import base_bands, left_out
 from retrofit.units import UnitSystem, listed, shown, told
 
 INDENT = " " * 9
@@ -218,9 +218,10 @@ def _findings(comparison: Comparison, units: UnitSystem, columns: int, strong: E
 def _small_print(comparison: Comparison, units: UnitSystem, columns: int, strong: Emphasis) -> str:
     case = comparison.case
     assumed = [f"{item.key} = {item.shown_text}" for item in case.defaults]
+    base = base_bands(comparison)
     parts = [
-        f"Accuracy: {bands_text(model_band(), units)}; {NEAR} marks a difference inside the band: no meaningful "
-        "difference.",
+        f"Accuracy, 90%: {bands_text(base, units)} ({base['cop'].evidence_reason}; {left_out()}). {NEAR} marks a "
+        "difference inside the band: no meaningful difference.",
         *wider_texts(comparison, units),
         f"Assumed, not in the case: {listed(assumed, 'and')}." if assumed else "",
         "Not checked: " + "; ".join(not_checked(comparison)) + ".",

@@ -6,7 +6,7 @@ from retrofit.case import Case
 from retrofit.cycle import Temperatures, matched_pressures
 from retrofit.errors import RetrofitError
 from retrofit.properties import Fluid
-from retrofit.study.installed import efficiency_model
+from retrofit.study.efficiencies import efficiency_model
 from retrofit.study.ledger import Ledger
 from retrofit.study.result import Finding
 from retrofit.units import SI, quantity

@@ -27,7 +27,7 @@ if TYPE_CHECKING:
     from retrofit.study.result import Baseline, Comparison, Entry, Installed, Performance
     from retrofit.study.today import Today
 
-MOTOR = "compressor.motor_efficiency"
+MOTOR, DRIVE = "compressor.motor_efficiency", "compressor.drive_efficiency"
 POWER_KEYS = ("power", "current", "voltage", "phases", "power_factor")
 CURRENT_KEYS = ("voltage", "phases", "power_factor")
 FIELDS = {str(field.alias): name for name, field in Readings.model_fields.items()}
@@ -321,7 +321,7 @@ def _heat_balance(case: Case, model: Performance[float] | None) -> Beside:
         why = WhyNot.NOT_READ if cold is None and warm is None else WhyNot.KEY_MISSING
         return Beside(Compared.HEAT_BALANCE, "heat flow", warm, None, Reason(why, missing))
     line = 0.0 if model is None else model.line_heat_W / model.cooling_W
-    shaft = power * (case.compressor.motor_efficiency or 1.0)
+    shaft = power * (case.compressor.motor_and_drive or 1.0)
     taken_up = cold * (1.0 + line) + shaft * (1.0 - (case.compressor.heat_loss or 0.0))
     reason = None if taken_up > 0.0 else Reason(WhyNot.IN_DOUBT, tuple(f"readings.{key}" for key in keys))
     return Beside(Compared.HEAT_BALANCE, "heat flow", warm, taken_up, reason)
@@ -359,7 +359,7 @@ def _calibration(case: Case, table: tuple[Beside, ...]) -> Calibration | None:
     read, modelled = beside.read, beside.modelled
     if beside.reason is not None or read is None or modelled is None:
         return Calibration(False, read, modelled, None, None, allowed, beside.reason)
-    ratio, motor = read / modelled, case.compressor.motor_efficiency or 1.0
+    ratio, motor = read / modelled, case.compressor.motor_and_drive or 1.0
     losses = ratio / motor
     # Losses of a drive come on top of those of a motor that the case gives: less than these cannot be.
     if ratio < allowed[0]:
@@ -375,9 +375,13 @@ def _calibrated(comparison: Comparison, baseline: Baseline, at_point: Performanc
     if found is None or found.efficiency is None:
         return comparison
     why = "from readings: shaft power by the model over electrical power read (`calibrate` in [readings])"
-    others = tuple(default for default in case.defaults if default.key != MOTOR)
-    compressor = case.compressor.model_copy(update={"motor_efficiency": found.efficiency})
-    default = Default(MOTOR, f"{found.efficiency:.3g}", why)
+    # Where the isentropic efficiency holds the motor, what is left are losses of the drive.
+    key = DRIVE if case.compressor.motor_is_inside else MOTOR
+    others = tuple(default for default in case.defaults if default.key != key)
+    losses: dict[str, float | None] = {MOTOR: case.compressor.motor_efficiency, DRIVE: None, key: found.efficiency}
+    update = {name.partition(".")[2]: value for name, value in losses.items()}
+    compressor = case.compressor.model_copy(update=update)
+    default = Default(key, f"{found.efficiency:.3g}", why)
     case = replace(case, compressor=compressor, defaults=(*others, default))
     taken = Reason(WhyNot.IN_THE_MODEL, ("readings.power",))
     table = tuple(

@@ -1,9 +1,10 @@
-"""How sure the numbers are: the bands of the model by its grade, and which options lie inside them.
+"""How sure the numbers are: the 90 % bands of ratios to the existing refrigerant, and which options lie inside them.
 
-A refrigerant whose model misses its published boiling point by d kelvin has a pressure off by about 3.5 % times d, and
-with it suction density and capacity. That is added in quadrature to the base band, since the two have nothing to do
-with each other, and rounded up to the whole per cent or kelvin. The step from kelvin to bands is our own derivation;
-each `per_K_source` in bands.toml says how it was found.
+Two things make a band. What the compressor adds to a change of refrigerant is known by kind of evidence (`Evidence`).
+And a refrigerant whose model misses its published boiling point by d kelvin has a pressure off by about 3.5 % times d,
+and with it suction density and capacity: that is added in quadrature, since the two have nothing to do with each other,
+and rounded up to the whole per cent or kelvin. The step from kelvin to bands is our own derivation; bands.toml says how
+each figure was found. Heat exchangers and charge are in none of them.
 """
 
 from __future__ import annotations
@@ -17,7 +18,11 @@ from importlib.resources import files
 from operator import attrgetter
 from typing import Any
 
-from retrofit.study.result import Entry
+from retrofit.case import Case
+from retrofit.refrigerants import Refrigerant, find
+from retrofit.study.efficiencies import has_curve
+from retrofit.study.result import Comparison, Entry
+from retrofit.study.states import Evidence
 
 STEPS = {"relative": 0.01, "K": 1.0}
 # What may be compared: the band it is held against, and where to read it on the plant as installed and otherwise.
@@ -45,6 +50,7 @@ class Band:
         source: Where it comes from.
         reason: Why it is as wide as it is.
         offset_K: By how much the boiling point of the model is counted off.
+        evidence_reason: What it rests on without that.
     """
 
     value: float
@@ -52,6 +58,7 @@ class Band:
     source: str
     reason: str
     offset_K: float = 0.0
+    evidence_reason: str = ""
 
 
 @cache
@@ -61,29 +68,121 @@ def _table() -> Mapping[str, Any]:
 
 
 @cache
-def _widened(offset_K: float, reason: str) -> Mapping[str, Band]:
-    """Return the bands of a model that is off by some kelvin."""
-    return {name: _band(row, offset_K, reason) for name, row in _table()["base"].items()}
+def _bands(evidence: Evidence, offset_K: float, why_offset: str) -> Mapping[str, Band]:
+    """Return the bands of a change with some evidence, and of a model that is off by some kelvin."""
+    return {name: _band(name, *compressor_part(name, evidence), offset_K, why_offset) for name in _table()["base"]}
 
 
-def _band(row: Mapping[str, Any], offset_K: float, reason: str) -> Band:
+def compressor_part(name: str, evidence: Evidence) -> tuple[float, str, str]:
+    """Return what a band is before the refrigerant's own model widens it: value, source and reason. [- or K]
+
+    Args:
+        name: "capacity", "cop", "T_discharge" or "pressure".
+        evidence: How well the compressor's model is tested; discharge temperature and pressure do not ask.
+    """
+    base, row = _table()["base"][name], _table()["evidence"][evidence]
+    found = base if "value" in base else row
+    return found["value"] if found is base else row[name], found["source"], found["reason"]
+
+
+def _band(name: str, value: float, source: str, reason: str, offset_K: float, why_offset: str) -> Band:
+    row = _table()["base"][name]
     if offset_K == 0.0:
-        return Band(row["value"], row["unit"], row["source"], row["reason"])
+        return Band(value, row["unit"], source, reason, evidence_reason=reason)
     step = STEPS[row["unit"]]
-    steps = math.ceil(round(math.hypot(row["value"], row["per_K"] * offset_K) / step, 6))
-    source = f"{row['source']}; widened for the model: {row['per_K_source']}"
-    return Band(round(steps * step, 10), row["unit"], source, reason, offset_K)
+    steps = math.ceil(round(math.hypot(value, row["per_K"] * offset_K) / step, 6))
+    source = f"{source}; widened for the model: {row['per_K_source']}"
+    return Band(round(steps * step, 10), row["unit"], source, why_offset, offset_K, reason)
 
 
-def model_band(grade_word: str = "close") -> Mapping[str, Band]:
-    """Return the bands of a grade by name: capacity, cop, T_discharge, pressure.
+def percent_text(band: float) -> str:
+    """Return a relative band in per cent with at most one decimal, such as "8.5%".
+
+    Args:
+        band: The band. [-]
+    """
+    return f"{100.0 * band:.1f}".removesuffix(".0") + "%"
+
+
+def left_out() -> str:
+    """Return in words what no band holds."""
+    return str(_table()["left_out"]["reason"])
+
+
+def evidence_of(case: Case, existing: Entry, entry: Entry) -> Evidence:
+    """Return how well the model of the compressor is tested for a change of refrigerant.
+
+    Args:
+        case: The case, for the kind of compressor.
+        existing: The existing refrigerant, computed.
+        entry: The refrigerant to change to, computed.
+    """
+    if entry.refrigerant.designation == existing.refrigerant.designation:
+        return Evidence.SAME
+    tested = _table()["tested"]
+    kinds = tested["kinds"] + (tested["kinds_with_curve"] if has_curve(case.compressor) else [])
+    if case.compressor.kind not in kinds:
+        return Evidence.CONSTANT
+    if entry.duty is None or existing.duty is None:
+        return Evidence.UNTESTED
+    change_K = abs(entry.duty.T_discharge_isentropic_K - existing.duty.T_discharge_isentropic_K)
+    if not all(_is_like_tested(item.refrigerant) for item in (existing, entry)):
+        return Evidence.UNTESTED
+    return evidence_at(change_K)
+
+
+def evidence_at(change_K: float) -> Evidence:
+    """Return the evidence for refrigerants like those tested, by the change of isentropic discharge temperature.
+
+    Args:
+        change_K: The change, either way. [K]
+    """
+    rows = _table()["evidence"]
+    reached = (kind for kind in (Evidence.NEAR, Evidence.FAR) if abs(change_K) <= rows[kind]["up_to_K"])
+    return next(reached, Evidence.UNTESTED)
+
+
+def _is_like_tested(refrigerant: Refrigerant) -> bool:
+    tested = _table()["tested"]
+    parts = _shares(refrigerant)
+    other = sum(share for name, share in parts.items() if find(name).substance_group not in tested["groups"])
+    return bool(other <= tested["most_other"])
+
+
+def _shares(refrigerant: Refrigerant) -> Mapping[str, float]:
+    """Return the mass fractions of the components."""
+    return dict(refrigerant.composition)
+
+
+def model_band(grade_word: str = "close", evidence: Evidence = Evidence.NEAR) -> Mapping[str, Band]:
+    """Return the bands of a grade and of some evidence by name: capacity, cop, T_discharge, pressure.
 
     Args:
         grade_word: A word of `Grade`: "close", "fair", "weak" or "not checked".
+        evidence: How well the compressor's model is tested.
     Raises: KeyError for another word.
     """
     row = _table()["grade"][grade_word]
-    return _widened(row["offset_K"], row["reason"])
+    return _bands(evidence, row["offset_K"], row["reason"])
+
+
+def base_bands(comparison: Comparison) -> Mapping[str, Band]:
+    """Return the bands that hold for a comparison unless a refrigerant has wider ones.
+
+    Args:
+        comparison: The result; the best evidence that there is for one of its candidates counts.
+    """
+    return model_band(evidence=best_evidence(comparison.candidates))
+
+
+def best_evidence(candidates: Sequence[Entry]) -> Evidence:
+    """Return the best evidence of any computed candidate; that of constant efficiencies if there is none.
+
+    Args:
+        candidates: The candidates.
+    """
+    found = {entry.evidence for entry in candidates if entry.duty is not None} - {Evidence.SAME}
+    return next((kind for kind in Evidence if kind in found), Evidence.CONSTANT)
 
 
 def bands_of(entry: Entry) -> Mapping[str, Band]:
@@ -92,7 +191,11 @@ def bands_of(entry: Entry) -> Mapping[str, Band]:
     Args:
         entry: The refrigerant.
     """
-    return _widened(*max(_offsets(entry), key=lambda found: found[0]))
+    return _bands(entry.evidence, *_offset(entry))
+
+
+def _offset(entry: Entry) -> tuple[float, str]:
+    return max(_offsets(entry), key=lambda found: found[0])
 
 
 def _offsets(entry: Entry) -> Iterator[tuple[float, str]]:
@@ -122,22 +225,77 @@ def band_of(entry: Entry, name: str) -> float:
     return bands_of(entry)[name].value
 
 
-def pair_band(a: Entry, b: Entry, name: str) -> float:
-    """Return the band of the difference between two refrigerants: the larger of theirs. [- or K]
+def pair_bands(a: Entry, b: Entry) -> Mapping[str, Band]:
+    """Return the bands of the difference between two refrigerants by name.
 
-    The base band was set on ratios between refrigerants, so it holds for a difference already and is counted once. Of
-    what the models add, the larger prevails; two that err alike and apart could add up to 1.4 times as much.
+    Against the existing refrigerant that is the band of the other one's ratio. Two candidates have in common what
+    `shared_errors` says. Of what their models add, the larger prevails; two that err alike and apart could add up to
+    1.4 times as much.
+
+    Args:
+        a, b: The refrigerants.
+    """
+    offset = max(_offset(a), _offset(b), key=lambda found: found[0])
+    wider = max(a, b, key=lambda entry: list(Evidence).index(entry.evidence))
+    return {name: _pair_band(a, b, wider, name, offset) for name in _table()["base"]}
+
+
+def _pair_band(a: Entry, b: Entry, wider: Entry, name: str, offset: tuple[float, str]) -> Band:
+    value, source, reason = compressor_part(name, wider.evidence)
+    if "value" not in _table()["base"][name]:
+        one, other = (compressor_part(name, entry.evidence)[0] for entry in (a, b))
+        value = math.sqrt(max(one**2 + other**2 - 2.0 * shared_errors(a, b) * one * other, 0.0))
+    return _band(name, value, source, reason, *offset)
+
+
+def pair_band(a: Entry, b: Entry, name: str) -> float:
+    """Return one band of the difference between two refrigerants, as of `pair_bands`. [- or K]
 
     Args:
         a, b: The refrigerants.
         name: "capacity", "cop", "T_discharge" or "pressure".
     """
-    return max(band_of(a, name), band_of(b, name))
+    return pair_bands(a, b)[name].value
 
 
-def is_wider(entry: Entry) -> bool:
-    """Say whether a refrigerant has wider bands than the base, because of its model."""
-    return any(band_of(entry, name) > band.value for name, band in model_band().items())
+def shared_errors(a: Entry, b: Entry) -> float:
+    """Return how far the errors of two refrigerants' ratios to the existing one go together: a correlation. [-]
+
+    Args:
+        a, b: The refrigerants.
+    """
+    if a is b:
+        return 1.0
+    one, other = error_parts(a.refrigerant), error_parts(b.refrigerant)
+    return sum(weight * other.get(name, 0.0) for name, weight in one.items())
+
+
+def error_parts(refrigerant: Refrigerant) -> Mapping[str, float]:
+    """Return what the error of a refrigerant is the sum of: independent errors of unit variance, with their weights.
+
+    One is common to all on the machine, one belongs to each component, one is its own. The sum of the squares is 1, so
+    the correlation of two refrigerants is the product of their parts summed up.
+
+    Args:
+        refrigerant: The refrigerant.
+    Source: our own; the measure of likeness of two compositions is the coefficient of Bhattacharyya (1943).
+    """
+    shared = _table()["shared"]
+    own = 1.0 - shared["common"] - shared["composition"]
+    components = {
+        f"of {name}": math.sqrt(shared["composition"] * share) for name, share in _shares(refrigerant).items()
+    }
+    return {"common": math.sqrt(shared["common"]), **components, refrigerant.designation: math.sqrt(own)}
+
+
+def is_wider(entry: Entry, base: Mapping[str, Band] | None = None) -> bool:
+    """Say whether a refrigerant has wider bands than others: of the base, if nothing else is given.
+
+    Args:
+        entry: The refrigerant.
+        base: Bands to compare with.
+    """
+    return any(band_of(entry, name) > band.value for name, band in (base or model_band()).items())
 
 
 def on_the_plant(entries: Sequence[Entry]) -> bool:

@@ -40,9 +40,10 @@ READINGS = {
     for name, field in Readings.model_fields.items()
     if name not in ("date", "load", "ambient_K", "calibrate")
 }
+MOTOR = "compressor.motor_efficiency"
 MACHINE = {
     "compressor.swept_volume": "swept_volume_m3_per_s",
-    "compressor.motor_efficiency": "motor_efficiency",
+    MOTOR: "motor_efficiency",
 }
 
 
@@ -75,6 +76,8 @@ def _given(case: Case) -> dict[str, float]:
     """Return the readings, and what the case says of the compressor, by their keys in the file."""
     read = {key: getattr(case.readings, name) for key, name in READINGS.items()}
     machine = {key: getattr(case.compressor, name) for key, name in MACHINE.items()}
+    if machine[MOTOR] is not None and case.compressor.drive_efficiency is not None:
+        machine[MOTOR] *= case.compressor.drive_efficiency  # from the power read to the shaft
     return {key: float(value) for key, value in (read | machine).items() if value is not None}
 
 

@@ -15,6 +15,7 @@ from retrofit.errors import NoSolutionError, RetrofitError
 from retrofit.properties import Fluid, fluid, grade
 from retrofit.refrigerants import Refrigerant, cautions_for, change_cautions, find
 from retrofit.study.agreement import held_against_model
+from retrofit.study.bands import evidence_of
 from retrofit.study.baseline import baseline, case_with_readings
 from retrofit.study.families import family_of, is_new_plant
 from retrofit.study.hardware import run as hardware
@@ -141,7 +142,7 @@ def _solved(today: Today, entry: Entry, behaviour: Fluid) -> Entry:
             installed = run_installed(today.plant, behaviour, cycle, hottest_inlet_K(today.case))
         except NoSolutionError as error:
             reason = error.message
-    covered = bool(today.model.covers(cycle.pressure_ratio, cycle.p_suction_Pa))
+    covered = bool(today.model.of(behaviour).covers(cycle.pressure_ratio, cycle.p_suction_Pa))
     return replace(
         entry,
         status="ok",
@@ -181,6 +182,7 @@ def _against(entry: Entry, existing: Entry, parts: hardware.Today, behaviour: Fl
     difference = entry.duty.T_discharge_K - existing.duty.T_discharge_K
     return replace(
         entry,
+        evidence=evidence_of(parts.site.case, existing, entry),
         relative=ratios,
         T_discharge_difference_K=difference,
         hardware_numbers=None if entry.is_new_plant else hardware.hardware_numbers(parts, behaviour, entry),

@@ -7,7 +7,7 @@ from collections.abc import Mapping
 from retrofit.case import Case
 from retrofit.equipment.compressor import shaft_and_electric
 from retrofit.properties import Fluid
-from retrofit.study.installed import efficiency_model
+from retrofit.study.efficiencies import efficiency_model
 from retrofit.study.ledger import Ledger
 from retrofit.units import SI
 

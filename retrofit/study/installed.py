@@ -3,13 +3,11 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, fields, replace
-from typing import Protocol
 
 import numpy as np
-from numpy.typing import ArrayLike, NDArray
+from numpy.typing import ArrayLike
 
 from retrofit.case import Case
-from retrofit.case.compressor import Polynomial
 from retrofit.case.exchangers import Exchanger as ExchangerTable
 from retrofit.cycle import Cycle
 from retrofit.equipment.balance import (
@@ -19,70 +17,16 @@ from retrofit.equipment.balance import (
     condenser_difference,
     evaporator_difference,
 )
-from retrofit.equipment.compressor import EfficiencyCurve
 from retrofit.equipment.exchanger import Secondary
-from retrofit.equipment.polynomial import CompressorRating, efficiencies_of
 from retrofit.errors import NoSolutionError
 from retrofit.properties import Fluid
+from retrofit.study.efficiencies import CompressorModel
 from retrofit.study.operating import balanced, operating
 from retrofit.study.performance import as_numbers
 from retrofit.study.result import FloatArray, Installed, Operation, Performance
 
-Pair = tuple[FloatArray, FloatArray]
 USUAL_SUPERHEAT_SHARE = 0.65  # of inlet minus evaporating temperature: rating condition of EN 328, from memory
 USUAL_SUBCOOLING_SHARE = 0.7  # of bubble point minus inlet: our own
-
-
-class EfficiencyModel(Protocol):
-    """Isentropic and volumetric efficiency of the existing compressor, whatever they were described by."""
-
-    def at(self, pressure_ratio: ArrayLike, p_suction_Pa: ArrayLike | None = None) -> Pair:
-        """Return isentropic and volumetric efficiency. [-]"""
-        ...
-
-    def covers(self, pressure_ratio: ArrayLike, p_suction_Pa: ArrayLike | None = None) -> NDArray[np.bool_]:
-        """Return where the data reach."""
-        ...
-
-
-def efficiency_model(case: Case, existing: Fluid) -> EfficiencyModel:
-    """Return the efficiencies of the existing compressor from the case: constants, points or a polynomial.
-
-    Args:
-        case: The case.
-        existing: The refrigerant in the plant, that a polynomial is for.
-    Raises: QuantityError if points or coefficients are impossible; NoSolutionError if a polynomial comes
-        without a swept volume.
-    """
-    compressor = case.compressor
-    if compressor.polynomial is not None:
-        if compressor.swept_volume_m3_per_s is None:
-            raise NoSolutionError(
-                "a compressor's polynomial says nothing on volumetric efficiency without its swept volume; give "
-                "`swept_volume` in [compressor]"
-            )
-        return efficiencies_of(_rating(compressor.polynomial), existing, compressor.swept_volume_m3_per_s)
-    if compressor.efficiency_points is not None:
-        return EfficiencyCurve.through([tuple(point) for point in compressor.efficiency_points])
-    return EfficiencyCurve.constant(compressor.isentropic_efficiency, compressor.volumetric_efficiency)
-
-
-def _rating(table: Polynomial) -> CompressorRating:
-    return CompressorRating(
-        units=table.units,
-        T_evap_range_K=(table.T_evap_range_K[0], table.T_evap_range_K[1]),
-        T_cond_range_K=(table.T_cond_range_K[0], table.T_cond_range_K[1]),
-        capacity=table.capacity,
-        mass_flow=table.mass_flow,
-        power=table.power,
-        current=table.current,
-        superheat_K=table.superheat_K,
-        return_gas_K=table.return_gas_K,
-        subcooling_K=table.subcooling_K or 0.0,
-        voltage_V=table.voltage_V,
-        phases=table.phases,
-        power_factor=table.power_factor,
-    )
 
 
 @dataclass(frozen=True)
@@ -90,7 +34,8 @@ class ExistingPlant:
     """The existing machine with the conductances that today's point gives it; arrays where the case has them.
 
     Attributes:
-        machine: The machine, with today's conductances.
+        machine: The machine, with today's conductances and refrigerant.
+        model: Efficiencies of its compressor, by refrigerant.
         needed_W: Cooling that the plant has to deliver.
         today_W: Cooling of the plant today, running at full.
         start_K: Evaporating and condensing dew temperature of today's point, to start a solution from.
@@ -98,14 +43,14 @@ class ExistingPlant:
 
     case: Case
     machine: Machine
-    model: EfficiencyModel
+    model: CompressorModel
     needed_W: FloatArray
     today_W: FloatArray
     start_K: tuple[FloatArray, FloatArray]
 
 
 def existing_plant(
-    case: Case, existing: Fluid, cycle: Cycle, model: EfficiencyModel, swept_volume_m3_per_s: ArrayLike
+    case: Case, existing: Fluid, cycle: Cycle, model: CompressorModel, swept_volume_m3_per_s: ArrayLike
 ) -> ExistingPlant:
     """Return the plant as installed, its conductances from today's point.
 
@@ -120,7 +65,8 @@ def existing_plant(
         swept_volume_m3_per_s: Swept volume of the existing compressors. [m3/s]
     Raises: NoSolutionError if the case does not describe both exchangers, or temperatures cross in one.
     """
-    _, volumetric = model.at(cycle.pressure_ratio, cycle.p_suction_Pa)
+    own = model.of(existing)
+    _, volumetric = own.at(cycle.pressure_ratio, cycle.p_suction_Pa)
     mass_flow = np.asarray(swept_volume_m3_per_s) * volumetric * cycle.density_suction_kg_per_m3
     cooling = mass_flow * cycle.refrigerating_effect_J_per_kg
     heat = mass_flow * cycle.heat_rejected_J_per_kg
@@ -138,7 +84,7 @@ def existing_plant(
             )
     machine = Machine(
         swept_volume_m3_per_s=swept_volume_m3_per_s,
-        efficiencies=lambda ratio, p: model.at(ratio, p),
+        efficiencies=own.at,
         evaporator=replace(evaporator, conductance_W_per_K=conductances["evaporator"]),
         condenser=replace(condenser, conductance_W_per_K=conductances["condenser"]),
         settings=cycle.settings,
@@ -195,9 +141,9 @@ def run_installed(plant: ExistingPlant, behaviour: Fluid, cycle: Cycle, T_hottes
     factors = _film_factors(plant.case, behaviour.designation)
     # At full with the films of the case; the same cooling; at full with equal films, to show what they do; and at
     # full on the hottest day: all in one, since few conditions take as long as one.
-    machine = _with_films(
-        plant.machine, np.array([[*[factor] * 2, 1.0, factor][: 3 if T_hottest_K is None else 4] for factor in factors])
-    )
+    columns = 3 if T_hottest_K is None else 4
+    films = np.array([[*[factor] * 2, 1.0, factor][:columns] for factor in factors])
+    machine = _with_films(_machine(plant, behaviour), films)
     cooling, starts = [np.nan, float(plant.today_W), np.nan], (cycle.T_evap_dew_K, cycle.T_cond_dew_K)
     if T_hottest_K is not None:
         usual_K = float(np.asarray(machine.condenser.secondary.T_in_K))
@@ -211,7 +157,7 @@ def run_installed(plant: ExistingPlant, behaviour: Fluid, cycle: Cycle, T_hottes
             raise NoSolutionError(f"{behaviour.designation} in the plant as installed: {reason}")
     every = balanced(found)
     full, same = as_numbers(every, 0), as_numbers(every, 1)
-    is_covered = plant.model.covers(found.cycle.pressure_ratio, found.cycle.p_suction_Pa)
+    is_covered = plant.model.of(behaviour).covers(found.cycle.pressure_ratio, found.cycle.p_suction_Pa)
     conductances = machine.evaporator.conductance_W_per_K, machine.condenser.conductance_W_per_K
     return Installed(
         full=full,
@@ -239,7 +185,7 @@ def machine_at(
         T_cond_in_K: At the inlet of the condenser. [K]
     Returns: The machine, and evaporating and condensing dew temperature: today's, moved with the media. [K]
     """
-    machine = _with_films(plant.machine, _film_factors(plant.case, behaviour.designation))
+    machine = _with_films(_machine(plant, behaviour), _film_factors(plant.case, behaviour.designation))
     exchangers, starts = [], []
     for exchanger, T_in, start in zip(
         (machine.evaporator, machine.condenser), (T_evap_in_K, T_cond_in_K), plant.start_K, strict=True
@@ -247,6 +193,11 @@ def machine_at(
         starts.append(start + np.asarray(T_in) - np.asarray(exchanger.secondary.T_in_K))
         exchangers.append(replace(exchanger, secondary=replace(exchanger.secondary, T_in_K=T_in)))
     return replace(machine, evaporator=exchangers[0], condenser=exchangers[1]), (starts[0], starts[1])
+
+
+def _machine(plant: ExistingPlant, behaviour: Fluid) -> Machine:
+    """Return the machine with the efficiencies that its compressor has with a refrigerant."""
+    return replace(plant.machine, efficiencies=plant.model.of(behaviour).at)
 
 
 def _film_factors(case: Case, designation: str) -> tuple[float, float]:
@@ -270,7 +221,7 @@ def _operation(
 ) -> Operation[float]:
     """Return how the machine meets the cooling needed, from what it does at full, the first of every condition."""
     full = Performance(**{item.name: getattr(every, item.name)[0] for item in fields(Performance)})
-    machine, compressor = _with_films(plant.machine, factors), plant.case.compressor
+    machine, compressor = _with_films(_machine(plant, behaviour), factors), plant.case.compressor
     found = operating(behaviour, machine, compressor, full, plant.needed_W, plant.start_K)
     if np.isnan(found.mean_power_W):
         raise NoSolutionError(f"{behaviour.designation} in the plant as installed: no solution at part speed")

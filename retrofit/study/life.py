@@ -11,7 +11,7 @@ from retrofit.case import Case
 from retrofit.errors import RetrofitError
 from retrofit.properties import fluid
 from retrofit.study.accounts import Account, Accounts, accounts
-from retrofit.study.bands import band_of
+from retrofit.study.bands import error_parts, pair_band
 from retrofit.study.draws import (
     DesignRows,
     ModelError,
@@ -322,8 +322,10 @@ def _inputs(comparison: Comparison, life: Life) -> Iterator[Uncertain]:
     for entry in comparison.candidates:
         if entry.duty is None:
             continue
+        if entry.refrigerant.designation == comparison.existing.refrigerant.designation:
+            continue
         for quantity in MODEL:
-            band = band_of(entry, quantity)
+            band = pair_band(comparison.existing, entry, quantity)
             name = entry.refrigerant
             yield Uncertain(
                 key=f"model.{quantity}.{name.designation}",
@@ -331,7 +333,10 @@ def _inputs(comparison: Comparison, life: Life) -> Iterator[Uncertain]:
                 kind="ratio",
                 spread=Spread(1.0 - band, 1.0, 1.0 + band),
                 origin="model",
-                why="band of the model against today's refrigerant",
+                why="90 % band of the model against today's refrigerant",
+                parts=tuple(
+                    (f"model.{quantity}.{part}", weight) for part, weight in error_parts(entry.refrigerant).items()
+                ),
             )
 
 

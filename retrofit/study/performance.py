@@ -64,14 +64,14 @@ def performance(cycle: Cycle, cooling_W: FloatArray | float) -> Performance[Floa
 
 
 def electric_W(case: Case, power_W: ArrayLike) -> FloatArray:
-    """Return electrical power of the compressors.
+    """Return electrical power of the compressors, losses of motor and drive each counted once.
 
     Args:
-        case: The case; without a motor efficiency its isentropic efficiency counts as that of compressor and motor.
+        case: The case; what it does not give, the isentropic efficiency counts as holding.
         power_W: Power by the isentropic efficiency. [W]
     """
-    motor = case.compressor.motor_efficiency
-    return np.asarray(power_W, dtype=float) if motor is None else shaft_and_electric(power_W, motor)[1]
+    efficiency = case.compressor.motor_and_drive
+    return np.asarray(power_W, dtype=float) if efficiency is None else shaft_and_electric(power_W, efficiency)[1]
 
 
 def as_numbers(found: Performance[FloatArray], place: int | tuple[()] = ()) -> Performance[float]:

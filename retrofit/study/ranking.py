@@ -5,19 +5,20 @@ A weight never buys off a gate: an option with a stop is not ranked, it is named
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from retrofit.study.criteria import Criterion, gate
-from retrofit.study.result import Comparison
+from retrofit.study.result import Comparison, Entry
 from retrofit.study.spread import FloatArray
 from retrofit.units import listed
 
 BoolArray = NDArray[np.bool_]
 IntArray = NDArray[np.int64]
+PairBand = Callable[[Entry, Entry], float]
 
 LARGEST_WEIGHT = 10.0
 EQUAL_WEIGHT = 5.0
@@ -65,13 +66,13 @@ class Scores:
         return {name: criteria for name, criteria in found.items() if criteria}
 
 
-def score(comparison: Comparison, criteria: Sequence[Criterion], bands: Mapping[str, float]) -> Scores:
+def score(comparison: Comparison, criteria: Sequence[Criterion], band: PairBand) -> Scores:
     """Return the scores of every option that no gate stops.
 
     Args:
         comparison: A result that went through the checks.
         criteria: Its criteria, as `retrofit.study.criteria` measures them.
-        bands: How far the model of each refrigerant may be off in energy, as a share, by designation. [-]
+        band: Band of the difference between two refrigerants in energy, a share of the mean of both. [-]
     Returns: The scores; SCALE says how they are made.
     """
     not_ranked = {entry.refrigerant.designation: why for entry in comparison.entries if (why := gate(entry))}
@@ -80,9 +81,11 @@ def score(comparison: Comparison, criteria: Sequence[Criterion], bands: Mapping[
     raw = np.array([[_number(item.values[name]) for item in criteria] for name in names]).reshape(-1, len(criteria))
     counts = np.isfinite(raw).any(axis=0)
     used = [item for item, does_count in zip(criteria, counts, strict=True) if does_count]
-    blurred = [[item.modelled[name] * bands.get(name, 0.0) for item in used] for name in names]
-    doubt = np.array(blurred).reshape(len(names), len(used))
-    values, doubts = _scaled(raw[:, counts], np.maximum(doubt[:, None, :], doubt[None, :, :]))
+    entries = {entry.refrigerant.designation: entry for entry in comparison.entries}
+    widths = [[0.0 if a == b else band(entries[a], entries[b]) for b in names] for a in names]
+    modelled = np.array([[item.modelled[name] for item in used] for name in names]).reshape(len(names), len(used))
+    doubt = 0.5 * np.array(widths).reshape(len(names), len(names), 1) * (modelled[:, None, :] + modelled[None, :, :])
+    values, doubts = _scaled(raw[:, counts], doubt)
     return Scores(
         names=names,
         criteria=tuple(item.name for item in used),

@@ -15,7 +15,7 @@ from retrofit.refrigerants import Caution, Refrigerant
 from retrofit.study.hardware.numbers import HardwareNumbers
 from retrofit.study.law import LawBasis, LawCheck
 from retrofit.study.room import RoomCheck
-from retrofit.study.states import Family, Level, RestState, Verdict
+from retrofit.study.states import Evidence, Family, Level, RestState, Verdict
 
 if TYPE_CHECKING:
     from retrofit.study.agreement import Beside, Calibration
@@ -331,6 +331,7 @@ class Entry:
         T_discharge_difference_K: Discharge temperature against the existing refrigerant.
         T_limit_K: Up to where the components' equations of state are stated to hold.
         is_covered: Whether the data of the compressor reach to every point it is solved at.
+        evidence: How well the model of the compressor is tested for the change to it.
         hardware_numbers: What the components of the plant see with it, beside today's; None if not computed.
         cautions: From its safety class; always there.
         law: What the tables of law say; None until looked into, or without a jurisdiction or a table for it.
@@ -356,6 +357,7 @@ class Entry:
     T_discharge_difference_K: float | None = None
     T_limit_K: float | None = None
     is_covered: bool | None = None
+    evidence: Evidence = Evidence.CONSTANT
     hardware_numbers: HardwareNumbers | None = None
     law: LawCheck | None = None
     findings: tuple[Finding, ...] = ()

@@ -44,3 +44,13 @@ class RestState(StrEnum):
     NO_AMBIENT = "highest ambient not given"
     ABOVE_CRITICAL = "critical temperature at or below the highest ambient"
     NOT_COMPUTED = "not computed"
+
+
+class Evidence(StrEnum):
+    """How well the model of the compressor is tested for a change of refrigerant, the best first."""
+
+    SAME = "same"
+    NEAR = "near"
+    FAR = "far"
+    UNTESTED = "untested"
+    CONSTANT = "constant"

@@ -9,14 +9,15 @@ from collections.abc import Mapping
 from dataclasses import dataclass, replace
 
 import numpy as np
-from numpy.typing import ArrayLike, NDArray
+from numpy.typing import ArrayLike
 
 from retrofit.case import Case
 from retrofit.cycle import Cycle, Settings, Temperatures, cycle_temperatures, matched_pressures
 from retrofit.errors import NoSolutionError, OutsideValidRangeError
 from retrofit.properties import Fluid
+from retrofit.study.efficiencies import CompressorModel, efficiency_model
 from retrofit.study.hardware.conditions import Site, cycle_between
-from retrofit.study.installed import EfficiencyModel, ExistingPlant, Pair, efficiency_model, existing_plant
+from retrofit.study.installed import ExistingPlant, existing_plant
 from retrofit.study.performance import performance
 from retrofit.study.result import FloatArray
 from retrofit.units import ZERO_C_K
@@ -29,7 +30,7 @@ class Today:
     Attributes:
         case: The case.
         settings: Superheat, subcooling, drops and heat loss, equal for every refrigerant.
-        model: Efficiencies of the compressor.
+        model: Efficiencies of the compressor, by refrigerant.
         targets: Temperatures that are held equal.
         swept_volume_m3_per_s: Swept volume of the existing compressors.
         plant: The plant as installed, None with `plant_reason` if the case does not describe it.
@@ -37,7 +38,7 @@ class Today:
 
     case: Case
     settings: Settings
-    model: EfficiencyModel
+    model: CompressorModel
     targets: Temperatures
     swept_volume_m3_per_s: FloatArray
     plant: ExistingPlant | None
@@ -59,24 +60,6 @@ class Today:
         return _cycle(behaviour, self.targets, self.settings, self.model)
 
 
-@dataclass(frozen=True)
-class _Scaled:
-    """Efficiencies of a compressor times factors, at most 1."""
-
-    model: EfficiencyModel
-    factors: tuple[ArrayLike, ArrayLike]
-
-    def at(self, pressure_ratio: ArrayLike, p_suction_Pa: ArrayLike | None = None) -> Pair:
-        found = self.model.at(pressure_ratio, p_suction_Pa)
-        isentropic, volumetric = (
-            np.minimum(value * np.asarray(factor), 1.0) for value, factor in zip(found, self.factors, strict=True)
-        )
-        return isentropic, volumetric
-
-    def covers(self, pressure_ratio: ArrayLike, p_suction_Pa: ArrayLike | None = None) -> NDArray[np.bool_]:
-        return self.model.covers(pressure_ratio, p_suction_Pa)
-
-
 def today_of(case: Case, existing: Fluid, factors: tuple[ArrayLike, ArrayLike] | None = None) -> Today:
     """Solve the refrigerant in the plant from its reading: targets, swept volume and the plant as installed.
 
@@ -87,8 +70,8 @@ def today_of(case: Case, existing: Fluid, factors: tuple[ArrayLike, ArrayLike] |
     Raises: RetrofitError with the reason if it cannot be solved.
     """
     _check_subcooling(case)
-    settings, own = _settings(case), efficiency_model(case, existing)
-    model: EfficiencyModel = own if factors is None else _Scaled(own, factors)
+    settings, own = _settings(case), CompressorModel(case, existing, efficiency_model(case, existing))
+    model = own if factors is None else CompressorModel(case, existing, own.own, factors)
     reading = Temperatures(case.duty.T_evap_K, case.duty.T_cond_K, case.duty.reading)
     targets = cycle_temperatures(_cycle(existing, reading, settings, model), case.compare.match)
     # From here on the existing refrigerant goes the way of every other, so that against itself nothing changes.
@@ -105,13 +88,13 @@ def today_of(case: Case, existing: Fluid, factors: tuple[ArrayLike, ArrayLike] |
         # The balance solves conditions in parts: factors that differ between conditions go with the machine.
         isentropic, volumetric = factors
         machine = replace(
-            plant.machine, efficiencies=own.at, isentropic_factor=isentropic, volumetric_factor=volumetric
+            plant.machine, efficiencies=own.own.at, isentropic_factor=isentropic, volumetric_factor=volumetric
         )
-        plant = replace(plant, machine=machine)
+        plant = replace(plant, machine=machine, model=own)
     return Today(case, settings, model, targets, swept, plant, reason)
 
 
-def _cycle(behaviour: Fluid, temperatures: Temperatures, settings: Settings, model: EfficiencyModel) -> Cycle:
+def _cycle(behaviour: Fluid, temperatures: Temperatures, settings: Settings, model: CompressorModel) -> Cycle:
     """Solve the cycle of a refrigerant at temperatures, with the compressor's efficiencies at its own pressures."""
     p_evap, p_cond = matched_pressures(behaviour, temperatures, settings.subcooling_K)
     return cycle_between(behaviour, p_evap, p_cond, settings, model)

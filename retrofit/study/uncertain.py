@@ -2,7 +2,9 @@
 
 An input with plus or minus lies somewhere within its limits, nowhere more likely than elsewhere: a rectangular
 distribution, as the Guide to the expression of uncertainty in measurement (JCGM 100:2008, 4.3.7) takes where only the
-limits are known. One with low, base and high is triangular about its base.
+limits are known. One with low, base and high is triangular about its base. The error of the model is normal, its limits
+those that hold 90 % of it; what several refrigerants have of it in common is drawn once (`parts`). Inputs that are one
+thing in the plant, such as its leak rate today and after a change, move together (`moves_with`).
 """
 
 from __future__ import annotations
@@ -19,6 +21,7 @@ import numpy as np
 from retrofit.case import Case, meaning
 from retrofit.case.model import FIELDS
 from retrofit.case.values import FileValue
+from retrofit.study.efficiencies import has_curve as compressor_has_curve
 from retrofit.study.spread import FloatArray, Spread, single, triangular
 
 WEATHER = "year.weather"  # the weather of the year as a whole: a shift
@@ -35,6 +38,7 @@ PHYSICAL = {
     "compressor.volumetric_efficiency": "Volumetric efficiency",
     "compressor.swept_volume": "Swept volume",
     "compressor.motor_efficiency": "Motor efficiency",
+    "compressor.drive_efficiency": "Efficiency of the drive",
     "compressor.heat_loss": "Heat loss of the compressor",
     "evaporator.inlet": "Medium into the evaporator",
     "evaporator.outlet": "Medium out of the evaporator",
@@ -72,6 +76,8 @@ NAMES = {
     "money.yearly_service": "Yearly service",
 }
 LEAK_RATES = ("emissions.leak_rate", "emissions.leak_rate_after", "law.annual_leak_rate", "law.equipment")
+CHARGE = "plant.charge"
+HOLDS_90 = 1.6448536269514722  # standard normal quantile of 95 %: as much to either side holds 90 %
 OPTION_KINDS = {"charge": "mass", "leak_rate": "fraction", "contingency": "fraction", "plant_life": "years"}
 OWN_KINDS = {
     WEATHER: "temperature difference",
@@ -94,6 +100,9 @@ class Uncertain:
         origin: "case", "assumed" or "model".
         why: Where the limits come from.
         is_triangular: Whether it is the likelier the nearer to the value of the case.
+        moves_with: Key of the input that it is drawn with, its own if empty.
+        parts: For a normal distribution: keys of independent normal draws and their weights, whose squares sum up to
+            1; `spread` then holds 90 % of it.
     """
 
     key: str
@@ -103,6 +112,29 @@ class Uncertain:
     origin: str
     why: str
     is_triangular: bool = False
+    moves_with: str = ""
+    parts: tuple[tuple[str, float], ...] = ()
+
+    @property
+    def distribution(self) -> str:
+        """Return the name of its distribution."""
+        return "normal" if self.parts else "triangular" if self.is_triangular else "rectangular"
+
+    def drawn(self, draws: int, seed: int) -> FloatArray:
+        """Return draws of it, shape (draws,).
+
+        Args:
+            draws: Number of draws. [-]
+            seed: The same seed gives the same draws. [-]
+        Source: a sum of independent normal numbers is normal, its variance the sum of theirs.
+        """
+        if not self.parts:
+            return self.at(stratified(draws, seed, self.moves_with or self.key))
+        total = np.zeros(draws)
+        for key, weight in self.parts:
+            total += weight * normal(draws, seed, key)
+        half = 0.5 * (self.spread.high - self.spread.low)
+        return self.spread.base + half / HOLDS_90 * total
 
     def at(self, share: FloatArray) -> FloatArray:
         """Return the value below which a share of the distribution lies.
@@ -190,7 +222,8 @@ def counted_inputs(case: Case, counted: Mapping[str, Spread]) -> Iterator[Uncert
         if spread.low < spread.high:
             why = "low, base and high of the case" if key in FIELDS or "." in key else "a range"
             kind, name = named(case, key)
-            yield Uncertain(key, name, kind, spread, "case", why, is_triangular=True)
+            together = moves_with(case, key)
+            yield Uncertain(key, name, kind, spread, "case", why, is_triangular=True, moves_with=together)
         else:
             yield from _within_limits(case, key, spread)
 
@@ -201,7 +234,7 @@ def has_curve(case: Case) -> bool:
     Args:
         case: The case.
     """
-    return case.compressor.efficiency_points is not None or case.compressor.polynomial is not None
+    return compressor_has_curve(case.compressor)
 
 
 @cache
@@ -225,7 +258,27 @@ def _within_limits(case: Case, key: str, spread: Spread) -> Iterator[Uncertain]:
     low = max(base - half, 0.0) if is_bounded else base - half
     high = min(base + half, 1.0) if kind == "fraction" else base + half
     if low < high:
-        yield Uncertain(key, name, kind, Spread(low, base, high), origin, why)
+        yield Uncertain(key, name, kind, Spread(low, base, high), origin, why, moves_with=moves_with(case, key))
+
+
+def moves_with(case: Case, key: str) -> str:
+    """Return the key of the input that another is drawn with: its own, unless both are one thing in the plant.
+
+    The leak rate after a change goes with that of today, and a charge after it with today's; those of a new plant are
+    its own.
+
+    Args:
+        case: The case.
+        key: Key of the input.
+    """
+    table, _, rest = key.partition(".")
+    name, _, item = rest.rpartition(".")
+    if table == "options":
+        option = case.options.by_refrigerant.get(name) if case.options else None
+        if option is not None and (option.new_plant is not None or option.seasonal_cop is not None):
+            return key
+        return {"leak_rate": LEAK_RATES[0], "charge": CHARGE}.get(item, key)
+    return LEAK_RATES[0] if key in (*LEAK_RATES, "emissions.leak_log") else key
 
 
 def named(case: Case, key: str) -> tuple[str, str]:
@@ -265,7 +318,7 @@ def sample(inputs: Iterable[Uncertain], draws: int, seed: int) -> Sample:
     values = {}
     for place, item in enumerate(known):
         column = np.full(1 + draws + 2 * len(known), item.spread.base)
-        column[1 : 1 + draws] = item.at(stratified(draws, seed, item.key))
+        column[1 : 1 + draws] = item.drawn(draws, seed)
         start = 1 + draws + 2 * place
         column[start], column[start + 1] = item.spread.low, item.spread.high
         values[item.key] = column
@@ -285,3 +338,17 @@ def stratified(draws: int, seed: int, key: str) -> FloatArray:
 
     generator = np.random.default_rng([seed, zlib.crc32(key.encode())])
     return np.asarray(LatinHypercube(d=1, rng=generator).random(draws)[:, 0])
+
+
+def normal(draws: int, seed: int, key: str) -> FloatArray:
+    """Return standard normal numbers, one in each of as many equal shares of the distribution as there are draws.
+
+    Args:
+        draws: Number of draws. [-]
+        seed: The same seed and key give the same numbers. [-]
+        key: Key of what is drawn. [-]
+    Returns: The numbers, shape (draws,). [-]
+    """
+    from scipy.special import ndtri
+
+    return np.asarray(ndtri(stratified(draws, seed, key)))

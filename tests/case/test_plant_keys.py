@@ -38,7 +38,7 @@ def with_(tables="", plant=""):
 
 def keys_of(read):
     """Return the keys whose default was taken, without those of the shortest case."""
-    usual = ("plant.altitude", "duty.", "compressor.isentropic", "compressor.volumetric", "compare.")
+    usual = ("plant.altitude", "duty.", "compressor.kind", "compressor.isentropic", "compressor.volumetric", "compare.")
     return [default.key for default in read.defaults if not default.key.startswith(usual)]
 
 
@@ -128,7 +128,7 @@ def test_efficiency_points_stand_instead_of_the_two_efficiencies(case):
     first, second = read.compressor.efficiency_points
     assert (first.pressure_ratio, first.isentropic_efficiency, first.volumetric_efficiency) == (2.0, 0.62, 0.92)
     assert second == (4.0, 0.7, 0.86)
-    assert not [default.key for default in read.defaults if default.key.startswith("compressor")]
+    assert [d.key for d in read.defaults if d.key.startswith("compressor")] == ["compressor.kind"]
 
 
 def test_a_polynomial_is_held_as_printed(case):
@@ -142,7 +142,36 @@ def test_a_polynomial_is_held_as_printed(case):
     assert polynomial.return_gas_K == pytest.approx(291.483, abs=1e-3)
     assert polynomial.T_evap_range_K == pytest.approx((233.15, 268.15))
     assert polynomial.T_cond_range_K == pytest.approx((298.15, 328.15))
-    assert not [default.key for default in read.defaults if default.key.startswith("compressor")]
+    taken = {d.key: d.shown_text for d in read.defaults if d.key.startswith("compressor")}
+    assert taken == {"compressor.kind": "unknown", "compressor.power_at": "terminals"}
+    assert read.compressor.motor_is_inside
+
+
+@pytest.mark.parametrize(
+    ("keys", "expected"),
+    [
+        ("", None),
+        ("motor_efficiency = 0.9\n", 0.9),
+        ("motor_efficiency = 0.9\ndrive_efficiency = 0.96\n", 0.9 * 0.96),
+        ("drive_efficiency = 0.96\n", 0.96),
+    ],
+)
+def test_losses_of_motor_and_drive_count_once_each(case, keys, expected):
+    """With constant efficiencies both come on top; a power at the terminals holds the motor, one at the shaft not."""
+    with_power = POLYNOMIAL.replace(
+        f'current = {TEN}\nvoltage = "460 V"\nphases = 3\npower_factor = "85 %"', f"power = {TEN}"
+    )
+    alone, terminals, shaft = (
+        case(with_(text)).compressor.motor_and_drive
+        for text in (
+            f"[compressor]\n{keys}",
+            f"[compressor]\n{keys}{with_power}",
+            f'[compressor]\npower_at = "shaft"\n{keys}{with_power}',
+        )
+    )
+
+    assert alone == shaft == (None if expected is None else pytest.approx(expected))
+    assert terminals == (pytest.approx(0.96) if "drive" in keys else None)
 
 
 def test_motor_and_control_of_the_compressor_are_read(case):

@@ -48,6 +48,7 @@ def test_the_shortest_case_takes_every_default_and_says_so(case):
         ("duty.useful_superheat", "5 K"),
         ("duty.line_superheat", "0 K"),
         ("duty.subcooling", "0 K"),
+        ("compressor.kind", "unknown"),
         ("compressor.isentropic_efficiency", "0.70"),
         ("compressor.volumetric_efficiency", "0.90"),
         ("compare.match", "mean"),
@@ -65,7 +66,7 @@ def test_a_full_case_is_read_into_si(case):
             'high_side_limit = "28 bar g"\nevaporator = "flooded"\n[duty]\nreading = "mean"\n'
             'useful_superheat = "9 R"\nline_superheat = "8 K"\nsubcooling = "3 K"',
         )
-        + 'match = "dew"\n[compressor]\nisentropic_efficiency = "68 %"\nvolumetric_efficiency = 1\n'
+        + 'match = "dew"\n[compressor]\nkind = "piston"\nisentropic_efficiency = "68 %"\nvolumetric_efficiency = 1\n'
         'swept_volume = "201 m3/h"\n'
     )
 

@@ -145,12 +145,12 @@ def test_displacement_and_duty_that_do_not_fit_are_noted(solved, share, level):
     assert [item.level for item in found.findings if item.code == "inputs-disagree"] == [level] * bool(level)
 
 
-@pytest.mark.parametrize(("share", "is_doubtful"), [(0.931, True), (0.929, False)])
+@pytest.mark.parametrize(("share", "is_doubtful"), [(0.881, True), (0.879, False)])
 def test_a_shortfall_inside_the_band_is_called_doubtful(solved, with_numbers, share, is_doubtful):
     """A shortfall of up to 7 % lies within what the model can tell, and the finding says so."""
     fact = finding(with_numbers(solved, compressor={"cooling_W": share * 120e3}), "capacity").fact
 
-    assert ("within the ±7% of the model" in fact) == is_doubtful
+    assert ("within the ±12% of the model" in fact) == is_doubtful
 
 
 @pytest.mark.parametrize(("kelvin", "level"), DISTANCE)

@@ -37,10 +37,10 @@ def test_plant_as_it_is_kept_and_changed_are_told_apart(result):
 
 
 @pytest.mark.parametrize(
-    ("factor", "is_alike"), [(1.0, True), (0.95, True), (1.05, True), (0.93, False), (1.08, False)]
+    ("factor", "is_alike"), [(1.0, True), (0.95, True), (1.05, True), (0.92, False), (1.09, False)]
 )
 def test_electricity_inside_the_band_is_no_difference(factor, is_alike, result):
-    """Between two refrigerants graded close the COP band is 6 % of the mean of both: 0.95 is inside, 0.93 is not."""
+    """Between two refrigerants graded close the COP band is 8 % of the mean of both: 0.95 is inside, 0.92 is not."""
     as_is, *others = prospects(result)
     option = next(option for option in others if option.name == "R448A")
     even = scaled(option, as_is.year.energy_J / option.year.energy_J)
@@ -51,12 +51,15 @@ def test_electricity_inside_the_band_is_no_difference(factor, is_alike, result):
 
 
 def test_groups_are_those_within_reach_of_each_other(result):
-    """100, 105 and 110: the first two and the last two are alike, the outer two are not, so two groups."""
+    """100, 103 and 106: the first two and the last two are alike, the outer two are not, so two groups.
+
+    Like blends share errors: by hand 8 sqrt(2 (1 - r)) with r = 0.885, 0.842, 0.836 gives bands of 3.8, 4.5 and 4.6 %.
+    """
     options = [option for option in prospects(result) if option.name in ("R448A", "R449A", "R407A")]
     energy = options[0].year.energy_J
     made = [
         scaled(option, factor * energy / option.year.energy_J)
-        for option, factor in zip(options, (1.0, 1.05, 1.10), strict=True)
+        for option, factor in zip(options, (1.0, 1.03, 1.06), strict=True)
     ]
 
     assert [[option.name for option in group] for group in groups(made, "energy")] == [

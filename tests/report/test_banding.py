@@ -15,13 +15,13 @@ from retrofit.study import compare
 from retrofit.units import IP, SI
 
 # R438A is graded weak (tests/properties/test_grade.py), R427A and R407C close.
-WIDER = "capacity ±15%, COP ±8%, discharge temperature ±10 K, pressures ±13%"
+WIDER = "capacity ±14%, COP ±10%, discharge temperature ±10 K, pressures ±13%"
 
 
 @pytest.fixture(scope="module")
 def weak(case_of):
     """Return an assessed comparison of R22 with a weak blend and two close ones."""
-    return assess(compare(case_of("R22", ["R438A", "R427A", "R407C"])))
+    return assess(compare(case_of("R22", ["R438A", "R427A", "R407C"], compressor={"kind": "piston"})))
 
 
 @pytest.fixture(scope="module")
@@ -56,7 +56,7 @@ def test_report_and_terminal_name_the_wider_band_and_the_reason(weak, page):
     assert f"Wider for R-438A: {WIDER.replace('%', ' %')}: model graded weak" in shown
     for found in (text, shown):
         assert "3.5 K at the boiling point" in found
-        assert re.search(r"capacity ±7 ?%, COP ±6 ?%, discharge temperature ±8 K, pressures ±2 ?%", found)
+        assert re.search(r"capacity ±6 ?%, COP ±8 ?%, discharge temperature ±8 K, pressures ±2 ?%", found)
 
 
 def test_the_wider_band_speaks_the_readers_units(weak):
@@ -73,32 +73,32 @@ def test_a_case_of_close_models_has_no_wider_band(weak):
 
 
 def test_the_json_has_the_bands_of_each_with_the_reason(weak):
-    """Four bands, in words of the contract, for every refrigerant."""
+    """Four bands of ratios to today's refrigerant, in words of the contract; of itself it has no ratio that is off."""
     found = comparison_json(weak)
     today, first = found["existing"]["bands"], found["candidates"][0]["bands"]
 
-    assert [today[name] for name in ("capacity", "cop", "T_discharge_K", "pressure")] == [0.07, 0.06, 8.0, 0.02]
-    assert [first[name] for name in ("capacity", "cop", "T_discharge_K", "pressure")] == [0.15, 0.08, 10.0, 0.13]
+    assert [today[name] for name in ("capacity", "cop", "T_discharge_K", "pressure")] == [0.0, 0.0, 8.0, 0.02]
+    assert [first[name] for name in ("capacity", "cop", "T_discharge_K", "pressure")] == [0.14, 0.10, 10.0, 0.13]
     assert first["reason"].startswith("model graded weak")
     assert first["boiling_point_offset_K"] == 3.5
 
 
-@pytest.mark.parametrize(("cop", "words"), [(1.079, "no"), (1.081, "higher"), (0.921, "no"), (0.919, "lower")])
+@pytest.mark.parametrize(("cop", "words"), [(1.099, "no"), (1.101, "higher"), (0.901, "no"), (0.899, "lower")])
 def test_the_answer_holds_each_candidate_against_its_own_band(weak, cop, words):
-    """8 % of COP for the weak one, named with it; 6 % for the others."""
+    """10 % of COP for the weak one, named with it; 8 % for the others."""
     found = {
         name: words for words, names in groups(turned(weak, cop=cop), "COP at the same duty").items() for name in names
     }
     name = next(name for name in found if name.startswith("R438A"))
 
-    assert name.endswith(", its band ±8%)")
+    assert name.endswith(", its band ±10%)")
     assert found[name].split(" ")[0] == words
     assert not any("its band" in other for other in found if other != name)
 
 
-@pytest.mark.parametrize(("change", "is_near"), [(0.149, True), (0.151, False)])
+@pytest.mark.parametrize(("change", "is_near"), [(0.139, True), (0.141, False)])
 def test_table_and_terminal_mark_a_difference_inside_its_own_band(weak, change, is_near, read_page, made_at):
-    """15 % of capacity for the weak one."""
+    """14 % of capacity for the weak one."""
     comparison = turned(weak, capacity=1.0 - change)
     rows = read_page(render_html(comparison, "si", made_at=made_at)).tables["t-comparison"]
     row = next(row for row in rows if row[0] == "Cooling against today")
@@ -107,7 +107,7 @@ def test_table_and_terminal_mark_a_difference_inside_its_own_band(weak, change, 
     line = next(line for line in table.splitlines() if line.startswith("R438A"))
 
     assert row[3].startswith("≈") == is_near
-    assert bool(re.search(r"≈ −14\.9 %", line)) == is_near
+    assert bool(re.search(r"≈ −13\.9 %", line)) == is_near
 
 
 def test_the_charts_draw_and_name_the_wider_band(weak):
@@ -116,7 +116,7 @@ def test_the_charts_draw_and_name_the_wider_band(weak):
     (changes,), (plain,) = figures.change_charts(weak), figures.change_charts(close)
     discharge = figures.discharge_chart(weak, SI)
 
-    assert "R-438A: cooling ±15 % and COP ±8 %" in changes.caption
+    assert "R-438A: cooling ±14 % and COP ±10 %" in changes.caption
     assert "Wider in its row" not in plain.caption
     assert changes.svg.count("FillBetween") == 4
     assert "FillBetween" not in plain.svg
@@ -134,7 +134,9 @@ def test_the_answer_says_which_candidates_are_alike_among_themselves(weak):
     assert words == "no meaningful difference in cooling, same compressor"
     assert "in COP, same duty" in cop_words
     together = [set(name.split(" / ")) for name in names]
-    for a, b, band in (("R438A", "R427A", 0.15), ("R438A", "R407C", 0.15), ("R427A", "R407C", 0.07)):
+    # By hand: like blends share some 88 % of the compressor's error, so 6 sqrt(2 (1 - 0.878)) = 2.96 %; with the weak
+    # model sqrt(3.1^2 + 12.25^2) = 12.6, rounded up to 13 %.
+    for a, b, band in (("R438A", "R427A", 0.13), ("R438A", "R407C", 0.13), ("R427A", "R407C", 0.0296)):
         difference = abs(cooling[a] - cooling[b]) / (0.5 * (cooling[a] + cooling[b]))
         assert any({a, b} <= group for group in together) == (difference <= band)
     assert not any(matter.about == "Among the candidates" for matter in answer(alone, SI).matters)

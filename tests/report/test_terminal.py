@@ -91,10 +91,10 @@ def test_numbers_shown_are_the_results(comparison):
         assert number(cooling) == pytest.approx(entry.compressor.cooling_W / 1e3, abs=0.051)
         if entry.family != "keep":
             change = re.split(r"\s{2,}", row)[-1]
-            # 6 % of COP: every blend here is checked close to published points, and a single substance, checked or
-            # not, is solved by its own reference equation.
+            # 14 % of COP without a kind of compressor: every blend here is checked close to published points, and a
+            # single substance, checked or not, is solved by its own reference equation.
             assert entry.grade.word == "close" or len(entry.refrigerant.composition) == 1
-            assert change.startswith("≈") == (abs(entry.relative["cop"] - 1) <= 0.06)
+            assert change.startswith("≈") == (abs(entry.relative["cop"] - 1) <= 0.14)
             assert number(change.lstrip("≈ ")) == pytest.approx(100 * (entry.relative["cop"] - 1), abs=0.051)
 
 
@@ -178,7 +178,7 @@ def test_small_print_has_assumptions_accuracy_versions_and_what_is_not_checked(c
     """A reader sees what the numbers rest on."""
     text = " ".join(comparison_text(comparison, SI, 100).split())
 
-    for words in ("Accuracy: capacity ±7%", "Not checked: ", "Versions: retrofit ", "coolprop "):
+    for words in ("Accuracy, 90%: capacity ±12%", "Not checked: ", "Versions: retrofit ", "coolprop "):
         assert words in text
     assert "swept volume not in the case: what today's duty needs" in text
 

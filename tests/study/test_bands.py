@@ -23,11 +23,15 @@ from retrofit.study.bands import (
     alike,
     band_of,
     bands_of,
+    error_parts,
+    evidence_of,
     groups_alike,
     is_wider,
     model_band,
     pair_band,
+    shared_errors,
 )
+from retrofit.study.states import Evidence
 
 KELVIN = 273.15
 NAMES = ("capacity", "cop", "T_discharge", "pressure")
@@ -37,10 +41,10 @@ WEAK = ("R401A", "R402A", "R437A", "R438A", "R453A", "R458A")  # as in tests/pro
 ESTIMATED = (*WEAK, "R406A", "R408A", "R409A", "R424A", "R426A", "R481A")
 
 
-def entry(word="close", *, bubble=0.0, dew=0.0, pairs=(), name="R448A", graded=True):
+def entry(word="close", *, bubble=0.0, dew=0.0, pairs=(), name="R448A", graded=True, evidence=Evidence.NEAR):
     """Return a refrigerant with a grade of its model, or none."""
     found = Grade(word, bubble, dew, pairs, word) if graded else None
-    return Entry(find(name), "convert", "ok", None, (), grade=found)
+    return Entry(find(name), "convert", "ok", None, (), grade=found, evidence=evidence)
 
 
 def test_every_grade_has_four_bands_with_unit_source_and_reason():
@@ -56,18 +60,21 @@ def test_every_grade_has_four_bands_with_unit_source_and_reason():
 
 
 def test_the_base_bands_are_those_the_project_states():
-    """7 % of capacity, 6 % of COP, 8 K of discharge temperature, 2 % of pressure."""
-    assert [band.value for band in model_band().values()] == [0.07, 0.06, 8.0, 0.02]
+    """6 % of capacity, 8 % of COP, 8 K of discharge temperature, 2 % of pressure; wider with less evidence."""
+    assert [band.value for band in model_band().values()] == [0.06, 0.08, 8.0, 0.02]
+    assert [band.value for band in model_band(evidence=Evidence.FAR).values()] == [0.085, 0.095, 8.0, 0.02]
+    for evidence in (Evidence.UNTESTED, Evidence.CONSTANT):
+        assert [band.value for band in model_band(evidence=evidence).values()] == [0.12, 0.14, 8.0, 0.02]
 
 
 def test_the_wider_bands_by_hand():
-    """In quadrature, rounded up: sqrt(7^2 + (3.5 x 3.5)^2) = 14.1, sqrt(6^2 + 5.25^2) = 7.97 and so on.
+    """In quadrature, rounded up: sqrt(6^2 + (3.5 x 3.5)^2) = 13.6, sqrt(8^2 + 5.25^2) = 9.57 and so on.
 
-    Fair, 1.6 K: sqrt(7^2 + 5.6^2) = 8.96, sqrt(6^2 + 2.4^2) = 6.46, sqrt(8^2 + 2.4^2) = 8.35, sqrt(2^2 + 5.6^2) = 5.95.
-    Weak, 3.5 K: 14.11, 7.97, sqrt(8^2 + 5.25^2) = 9.57, sqrt(2^2 + 12.25^2) = 12.41.
+    Fair, 1.6 K: sqrt(6^2 + 5.6^2) = 8.21, sqrt(8^2 + 2.4^2) = 8.35, in kelvin the same, sqrt(2^2 + 5.6^2) = 5.95.
+    Weak, 3.5 K: 13.64, 9.57, in kelvin the same, sqrt(2^2 + 12.25^2) = 12.41.
     """
-    assert [band.value for band in model_band("fair").values()] == [0.09, 0.07, 9.0, 0.06]
-    assert [band.value for band in model_band("weak").values()] == [0.15, 0.08, 10.0, 0.13]
+    assert [band.value for band in model_band("fair").values()] == [0.09, 0.09, 9.0, 0.06]
+    assert [band.value for band in model_band("weak").values()] == [0.14, 0.10, 10.0, 0.13]
 
 
 def test_the_slope_of_ln_p_by_hand():
@@ -158,13 +165,73 @@ def test_the_band_of_a_refrigerant_is_that_of_its_own_model():
     assert [is_wider(item) for item in (entry(), entry("fair"), far, unknown)] == [False, True, True, True]
 
 
-def test_the_band_of_a_pair_is_the_larger_either_way_round():
-    """The base is counted once."""
-    close, weak = entry(), entry("weak")
+def test_the_band_against_the_existing_refrigerant_is_that_of_the_ratio():
+    """The existing one has none of its own; of the two models the worse one counts, either way round."""
+    today, close, weak = entry(name="R404A", evidence=Evidence.SAME), entry(), entry("weak")
+    weak_today = entry("weak", name="R404A", evidence=Evidence.SAME)
 
     for name in NAMES:
-        assert pair_band(close, weak, name) == pair_band(weak, close, name) == band_of(weak, name)
-        assert pair_band(close, close, name) == band_of(close, name)
+        assert pair_band(today, weak, name) == pair_band(weak, today, name) == band_of(weak, name)
+        assert pair_band(weak_today, close, name) == band_of(weak, name)
+        assert pair_band(today, close, name) == band_of(close, name)
+    assert pair_band(today, today, "cop") == 0.0
+
+
+def test_candidates_share_a_part_of_their_errors():
+    """By hand: without a common component the correlation is 0.5, so the band of the difference is that of each.
+
+    sqrt(6^2 + 6^2 - 2 x 0.5 x 36) = 6. R32 with R410A, half of it R32: 0.5 + 0.4 sqrt(0.5) = 0.783, and the band
+    6 sqrt(2 (1 - 0.783)) = 3.95. Sister blends are told apart better still, and a refrigerant from itself wholly.
+    """
+    one, other, half = (entry(name=name) for name in ("R32", "R134a", "R410A"))
+
+    assert shared_errors(one, other) == pytest.approx(0.5)
+    assert pair_band(one, other, "capacity") == pytest.approx(0.06)
+    assert shared_errors(one, half) == pytest.approx(0.5 + 0.4 * math.sqrt(0.5))
+    assert pair_band(one, half, "capacity") == pytest.approx(0.06 * math.sqrt(2.0 * (0.5 - 0.4 * math.sqrt(0.5))))
+    assert pair_band(entry(), entry(name="R449A"), "capacity") < 0.03
+    for name in ("R448A", "R134a", "R455A"):
+        assert sum(weight**2 for weight in error_parts(find(name)).values()) == pytest.approx(1.0)
+
+
+def solved(name, T_isentropic_K):
+    """Return a refrigerant solved at a duty."""
+    return replace(entry(name=name), duty=SimpleNamespace(T_discharge_isentropic_K=T_isentropic_K))
+
+
+@pytest.mark.parametrize(
+    ("kind", "name", "change_K", "expected"),
+    [
+        ("piston", "R448A", 10.0, Evidence.NEAR),
+        ("scroll", "R448A", -25.0, Evidence.NEAR),
+        ("piston", "R448A", 26.0, Evidence.FAR),
+        ("piston", "R448A", 43.0, Evidence.UNTESTED),  # the pairs end at 41.5 K
+        ("piston", "R404A", 0.0, Evidence.SAME),
+        ("piston", "R1234yf", 5.0, Evidence.UNTESTED),
+        ("piston", "R454C", 5.0, Evidence.UNTESTED),  # 78.5 % R1234yf
+        ("piston", "R717", 5.0, Evidence.UNTESTED),
+        ("piston", "R290", 5.0, Evidence.UNTESTED),
+        ("unknown", "R448A", 10.0, Evidence.CONSTANT),
+        ("centrifugal", "R448A", 10.0, Evidence.CONSTANT),
+        ("rotary", "R448A", 10.0, Evidence.CONSTANT),
+        ("screw", "R448A", 10.0, Evidence.CONSTANT),
+    ],
+)
+def test_evidence_of_a_change(case_of, kind, name, change_K, expected):
+    """By kind of machine, refrigerant and change of the isentropic discharge temperature, as the table says."""
+    case = case_of(compressor={"kind": kind})
+
+    assert evidence_of(case, solved("R404A", 330.0), solved(name, 330.0 + change_K)) == expected
+
+
+def test_a_screw_with_its_own_curve_has_the_narrow_band(case_of):
+    """The pairs of screws hold the band only with a curve of the machine."""
+    case = case_of(compressor={"kind": "screw", "efficiency_points": [[2, 0.7, 0.9], [8, 0.6, 0.8]]})
+
+    assert evidence_of(case, solved("R404A", 330.0), solved("R448A", 340.0)) == Evidence.NEAR
+
+
+APART = ("R32", "R125", "R134a", "R143a", "R152a", "R22", "R12")  # no component in common: correlation 0.5
 
 
 def with_cop(value, word="close", name="R448A", plant=None):
@@ -174,7 +241,7 @@ def with_cop(value, word="close", name="R448A", plant=None):
 
 def test_alike_is_not_chained():
     """1.00, 1.05 and 1.10 differ by 5 % step by step and by 10 % over all: two groups, and no third."""
-    a, b, c = (with_cop(value) for value in (1.00, 1.05, 1.10))
+    a, b, c = (with_cop(value, name=name) for value, name in zip((1.00, 1.05, 1.10), APART, strict=False))
 
     assert (alike(a, b, "cop"), alike(b, c, "cop"), alike(a, c, "cop")) == (True, True, False)
     groups = groups_alike((a, b, c), "cop")
@@ -184,7 +251,7 @@ def test_alike_is_not_chained():
 def test_groups_hold_every_pair_and_no_other():
     """Whatever the values and grades: two share a group just when they are alike; no group lies inside another."""
     words = ("close", "weak", "close", "fair", "close", "not checked", "close")
-    entries = [with_cop(1.0 + 0.031 * i, word) for i, word in enumerate(words)]
+    entries = [with_cop(1.0 + 0.031 * i, word, APART[i]) for i, word in enumerate(words)]
     places = [[entries.index(item) for item in group] for group in groups_alike(entries, "cop")]
     paired = {pair for group in places for pair in combinations(group, 2)}
 
@@ -193,14 +260,14 @@ def test_groups_hold_every_pair_and_no_other():
 
 
 def test_a_weak_model_makes_alike_what_would_differ():
-    """7 % apart in COP: more than 6 % of close ones, less than the 8 % of a weak one."""
-    assert not alike(with_cop(1.0), with_cop(1.07), "cop")
-    assert alike(with_cop(1.0), with_cop(1.07, "weak"), "cop")
+    """9 % apart in COP, 8.6 % of their mean: more than 8 % of close ones, less than the 10 % of a weak one."""
+    assert not alike(with_cop(1.0), with_cop(1.09, name="R32"), "cop")
+    assert alike(with_cop(1.0, name="R134a"), with_cop(1.09, "weak", "R32"), "cop")
 
 
 def test_values_given_and_the_part_that_is_uncertain():
-    """Costs of 100 and 110 differ by 10; if 50 of each is electricity, the band of 6 % is 3, not 6.3."""
-    a, b = entry(), entry(name="R449A")
+    """Costs of 100 and 110 differ by 10; if 50 of each is electricity, the band of 8 % is 4, not 8.4."""
+    a, b = entry(name="R32"), entry(name="R134a")
 
     assert alike(a, b, "energy", (100.0, 105.0))
     assert not alike(a, b, "energy", (100.0, 110.0))
@@ -215,7 +282,9 @@ def test_one_that_is_not_computed_is_like_none():
     """It stands in no group, and the others in theirs."""
     missing = entry()
 
-    assert groups_alike((with_cop(1.0), missing, with_cop(1.01)), "cop")[0][1].duty.cop == 1.01
+    assert (
+        groups_alike((with_cop(1.0, name="R32"), missing, with_cop(1.01, name="R134a")), "cop")[0][1].duty.cop == 1.01
+    )
     assert not alike(with_cop(1.0), missing, "cop")
 
 
@@ -225,7 +294,7 @@ def test_groups_are_on_one_basis():
     other = SimpleNamespace(same_cooling=SimpleNamespace(cop=2.5))
 
     assert not alike(with_cop(1.0, plant=installed), with_cop(1.0, plant=other), "cop")
-    assert alike(with_cop(1.0, plant=installed), with_cop(1.0), "cop")
+    assert alike(with_cop(1.0, plant=installed), with_cop(1.0, name="R32"), "cop")
     assert {band for band, _, _ in QUANTITIES.values()} == set(NAMES)
 
 
@@ -234,7 +303,9 @@ def test_a_single_substance_has_the_base_band(case_of):
     entry = compare(case_of(candidates=("R744",), duty={"condensing": "20 degC"})).candidates[0]
 
     assert entry.grade.word == "not checked"
-    assert {name: band_of(entry, name) for name in model_band()} == {name: b.value for name, b in model_band().items()}
+    assert {name: band_of(entry, name) for name in model_band()} == {
+        name: b.value for name, b in model_band(evidence=Evidence.CONSTANT).items()
+    }
 
 
 def test_groups_of_many_refrigerants_are_found_at_once():

@@ -1,10 +1,8 @@
-"""Capacity ratios of the same compressor with two refrigerants, against compressor catalogues.
+"""Capacity and COP of the same compressor with two refrigerants, against medians of compressor catalogues.
 
-Source: EnergyPlus data set RefrigerationCompressorCurves.idf, release 25.2, makers' catalogue polynomials; median
-and quartiles over all models listed with both refrigerants, return gas at 18.3 degC, no subcooling. The catalogues
-are met within their quartiles widened by the model's own band of capacity, with a volumetric efficiency that knows
-nothing of a compressor but 4 % of clearance: R22 at high pressure ratio lies at the lower edge. Two upper quartiles
-are not carried, their print is damaged; the median stands for them.
+Source: EnergyPlus data set RefrigerationCompressorCurves.idf, release 25.2, makers' catalogue polynomials: median and
+quartiles over the listings with both refrigerants, one kind of machine and one rating condition each, every listing
+with its own curves. Listings of R507A that are a flat factor of those of R404A are no evidence and not among them.
 """
 
 from __future__ import annotations
@@ -14,12 +12,13 @@ from pathlib import Path
 
 import pytest
 
-from retrofit.cycle import Settings, solve_cycle
-from retrofit.properties import fluid
-from retrofit.study.bands import model_band
+from retrofit.case import Case
+from retrofit.study import Comparison, compare
+from retrofit.study.bands import compressor_part
+from retrofit.study.states import Evidence
 
 TABLE = Path(__file__).resolve().parents[1] / "published" / "compressor_ratios.csv"
-RETURN_GAS_C = 18.3
+EFFICIENCIES = {"isentropic_efficiency": 0.6, "volumetric_efficiency": 0.7}
 
 
 def rows() -> list[dict[str, str]]:
@@ -28,23 +27,35 @@ def rows() -> list[dict[str, str]]:
         return list(csv.DictReader(file))
 
 
-def capacity(name: str, T_evap_C: float, T_cond_C: float) -> float:
-    """Return the cooling of each cubic metre swept by a compressor with 4 % of clearance, all superheat counted."""
-    refrigerant = fluid(name)
-    p_evap, p_cond = (float(refrigerant.p_dew(T + 273.15)) for T in (T_evap_C, T_cond_C))
-    volumetric = 1.0 - 0.04 * ((p_cond / p_evap) ** (1 / 1.12) - 1.0)
-    cycle = solve_cycle(refrigerant, p_evap, p_cond, Settings(useful_superheat_K=RETURN_GAS_C - T_evap_C))
-    return float(cycle.volumetric_capacity_J_per_m3) * volumetric
+@pytest.fixture(params=rows(), ids=lambda row: row["id"])
+def rated(request, case_of) -> tuple[dict[str, str], Comparison]:
+    """Return a row, and the comparison at its rating: dew temperatures, all superheat counted as cooling."""
+    row = request.param
+    superheat = float(row["return_gas_C"]) - float(row["T_evap_C"])
+    case: Case = case_of(
+        row["existing"],
+        (row["candidate"],),
+        duty={
+            "evaporating": f"{row['T_evap_C']} degC",
+            "condensing": f"{row['T_cond_C']} degC",
+            "useful_superheat": f"{superheat} K",
+            "line_superheat": "0 K",
+            "subcooling": f"{row['subcooling_K']} K",
+        },
+        compressor=EFFICIENCIES | {"kind": row["kind"]},
+        match="dew",
+    )
+    return row, compare(case)
 
 
-@pytest.mark.parametrize("row", rows(), ids=lambda row: row["id"])
-def test_capacity_ratio_of_catalogues(row: dict[str, str]) -> None:
-    """The ratio lies within the catalogues' quartiles, widened by the band stated for capacity."""
-    at = float(row["T_evap_C"]), float(row["T_cond_C"])
-    found = capacity(row["candidate"], *at) / capacity(row["existing"], *at)
+@pytest.mark.parametrize("name", ["capacity", "cop"])
+def test_ratios_of_catalogues(rated: tuple[dict[str, str], Comparison], name: str) -> None:
+    """The median of the catalogues lies inside the band stated for the change."""
+    row, found = rated
+    candidate = found.candidates[0]
 
-    band = model_band()["capacity"].value
-    lowest, median = float(row["lowest_quartile"]), float(row["capacity_ratio"])
-    highest = float(row["highest_quartile"]) if row["highest_quartile"] else median
-    assert lowest <= median <= highest
-    assert lowest * (1.0 - band) <= found <= highest * (1.0 + band)
+    assert candidate.evidence in (Evidence.NEAR, Evidence.FAR)
+    band = compressor_part(name, candidate.evidence)[0]
+    low, median, high = (float(row[f"{name}_{which}"]) for which in ("lowest_quartile", "ratio", "highest_quartile"))
+    assert low <= median <= high
+    assert median / candidate.relative[name] == pytest.approx(1.0, abs=band)

@@ -13,7 +13,8 @@ from retrofit.case import Case, read_case
 from retrofit.cycle import Settings, solve_cycle
 from retrofit.properties import fluid
 from retrofit.study import Comparison, Entry, Installed, compare, installed
-from retrofit.study.installed import ExistingPlant, efficiency_model, existing_plant, machine_at
+from retrofit.study.efficiencies import CompressorModel, efficiency_model
+from retrofit.study.installed import ExistingPlant, existing_plant, machine_at
 
 CORE = """
 [plant]
@@ -182,19 +183,23 @@ def test_plant_without_balance_leaves_other_bases_standing(tmp_path: Path) -> No
 
 
 def test_points_of_efficiency_hold_at_each_refrigerants_own_ratio(tmp_path: Path) -> None:
-    """With points, a candidate of higher pressure ratio runs at the lower efficiency of that ratio."""
+    """With points, a candidate of higher pressure ratio runs at the efficiency of that ratio, its gas heated less.
+
+    By hand: a straight line between the two points, apart from the rounded ends; for another refrigerant times
+    H_a / H_b, with H = 1 + 0.5 (T2s - T1) / T1 at the same dew temperatures.
+    """
     points = 'efficiency_points = [[2, 0.70, 0.95], [10, 0.50, 0.65]]\nswept_volume = "201 m3/h"'
-    existing, other = (
-        found.duty for found in (lambda c: (c.existing, c.candidates[0]))(compare(case_of(tmp_path, compressor=points)))
-    )
+    found = compare(case_of(tmp_path, compressor=points, candidates='"R134a"]\nmatch = "dew" #'))
+    existing, other = found.existing.duty, found.candidates[0].duty
 
     assert existing is not None
     assert other is not None
     assert other.pressure_ratio > existing.pressure_ratio
-    for duty in (existing, other):
+    heating = [1.0 + 0.5 * (d.T_discharge_isentropic_K - d.T_suction_K) / d.T_suction_K for d in (existing, other)]
+    for duty, factor, tolerance in ((existing, 1.0, 1e-9), (other, heating[0] / heating[1], 1e-5)):
         volumetric = duty.suction_volume_flow_m3_per_s / duty.swept_volume_m3_per_s
-        # By hand: a straight line between the two points, apart from the rounded ends.
-        assert volumetric == pytest.approx(0.95 - 0.30 * (duty.pressure_ratio - 2.0) / 8.0, abs=1e-9)
+        line = 0.95 - 0.30 * (duty.pressure_ratio - 2.0) / 8.0
+        assert volumetric == pytest.approx(line * factor, rel=tolerance)
 
 
 def test_polynomial_reaches_the_cooling_it_states(tmp_path: Path) -> None:
@@ -263,7 +268,13 @@ def installed_of(case: Case, existing: str = "R134a") -> ExistingPlant:
             volumetric_efficiency=MACHINE["volumetric"],
         ),
     )
-    return existing_plant(case, refrigerant, cycle, efficiency_model(case, refrigerant), MACHINE["swept"])
+    return existing_plant(
+        case,
+        refrigerant,
+        cycle,
+        CompressorModel(case, refrigerant, efficiency_model(case, refrigerant)),
+        MACHINE["swept"],
+    )
 
 
 def one_fluid(tmp_path: Path, superheat: str = "6 K", subcooling: str = "3 K", **parts: str) -> Case:

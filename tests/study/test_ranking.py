@@ -33,6 +33,16 @@ def result(case, **levels):
     return Comparison(case, entries[0], tuple(entries[1:]), None, "duty", {})
 
 
+def no_band(a, b):
+    """Return a band of nothing."""
+    return 0.0
+
+
+def six_per_cent(a, b):
+    """Return a band of 6 % between any two."""
+    return 0.06
+
+
 def measured(name="energy", values=(100.0, 90.0, 95.0, 80.0), modelled=True):
     """Return a criterion of the four options."""
     known = dict(zip(NAMES, values, strict=True))
@@ -47,7 +57,7 @@ def plain(case_with):
 
 def test_a_gate_is_no_weight(plain):
     """An option with a stop is not ranked however good its numbers, and its gate is named; work is no gate."""
-    found = score(result(plain, R454C="stop", R448A="work"), [measured()], {})
+    found = score(result(plain, R454C="stop", R448A="work"), [measured()], no_band)
 
     assert found.names == ("R404A", "R448A", "R449A")
     assert found.not_ranked == {"R454C": "A gate"}
@@ -60,7 +70,7 @@ def test_what_is_not_computed_is_not_ranked(plain):
     whole = result(plain)
     broken = replace(whole.candidates[0], status="not computed", reason="no model")
 
-    found = score(replace(whole, candidates=(broken, *whole.candidates[1:])), [measured()], {})
+    found = score(replace(whole, candidates=(broken, *whole.candidates[1:])), [measured()], no_band)
 
     assert found.not_ranked == {"R448A": "not computed: no model"}
 
@@ -68,7 +78,7 @@ def test_what_is_not_computed_is_not_ranked(plain):
 def test_unknown_is_the_worst_and_said(plain):
     """What is not known scores 0 and is marked; what no option is known by does not count at all."""
     nobody = measured("climate", (None,) * 4)
-    found = score(result(plain), [measured(values=(100.0, None, 95.0, 80.0)), nobody], {})
+    found = score(result(plain), [measured(values=(100.0, None, 95.0, 80.0)), nobody], no_band)
 
     assert found.scores[:, 0] == pytest.approx([0.0, 0.0, 0.25, 1.0])
     assert found.unknown == {"R448A": ("energy",)}
@@ -76,8 +86,8 @@ def test_unknown_is_the_worst_and_said(plain):
 
 
 def test_closer_than_the_band_is_a_tie(plain):
-    """By hand, band 6 %: 100 against 95 (6.0) ties, against 90 not; with energy alone 95 and 90 tie too (5.7)."""
-    found = score(result(plain, R454C="stop"), [measured()], dict.fromkeys(NAMES, 0.06))
+    """By hand, band 6 %: 100 against 95 (5.85) ties, against 90 not; with energy alone 95 and 90 tie too (5.55)."""
+    found = score(result(plain, R454C="stop"), [measured()], six_per_cent)
     placed = order(found)
 
     assert placed.names == ("R448A", "R449A", "R404A")
@@ -88,16 +98,19 @@ def test_closer_than_the_band_is_a_tie(plain):
 def test_differences_within_the_band_are_not_stretched(plain):
     """Where all lie within the band nobody beats anybody, and scores do not fill the scale."""
     close = measured(values=(100.0, 99.0, 100.5, 99.5))
-    found = score(result(plain), [close], dict.fromkeys(NAMES, 0.06))
+    found = score(result(plain), [close], six_per_cent)
 
-    assert found.scores.min() == pytest.approx(1.0 - 1.5 / 6.03)
+    assert found.scores.min() == pytest.approx(1.0 - 1.5 / 6.015)  # 6 % of the mean of 100.5 and 100
     assert order(found).places == (1, 1, 1, 1)
 
 
 def test_a_worse_model_blurs_more(plain):
     """The wider band of two decides: R448A with a band of 20 % no longer beats R404A."""
-    bands = {**dict.fromkeys(NAMES, 0.06), "R448A": 0.20}
-    placed = order(score(result(plain, R454C="stop", R449A="stop"), [measured()], bands))
+
+    def band(a, b):
+        return 0.20 if "R448A" in (a.refrigerant.designation, b.refrigerant.designation) else 0.06
+
+    placed = order(score(result(plain, R454C="stop", R449A="stop"), [measured()], band))
 
     assert placed.places == (1, 1)
 
@@ -105,7 +118,7 @@ def test_a_worse_model_blurs_more(plain):
 def test_the_band_fades_with_the_weight(plain):
     """Where first cost decides and energy hardly counts, the band of energy ties nothing."""
     cost = measured("first cost", (0.0, 10.0, 20.0, 30.0), modelled=False)
-    found = score(result(plain), [measured(), cost], dict.fromkeys(NAMES, 0.06))
+    found = score(result(plain), [measured(), cost], six_per_cent)
 
     assert order(found, {"energy": 0, "first cost": 10}).places == (1, 2, 3, 4)
     assert order(found, {"energy": 0, "first cost": 0}).places == (1, 1, 1, 1)
@@ -117,7 +130,7 @@ def test_the_band_fades_with_the_weight(plain):
 def test_weights_have_bounds(plain, weights, match):
     """A weight beyond 10 or of nothing is refused."""
     with pytest.raises(ValueError, match=match):
-        order(score(result(plain), [measured()], {}), weights)
+        order(score(result(plain), [measured()], no_band), weights)
 
 
 # Shares worked by hand for flat weights: the first weight of two is even between 0 and 1; of three it is above t with
@@ -232,7 +245,7 @@ def test_a_whole_case(market):
     """The market without a year or money: COP, climate weight of the charge, points; and its A2L stopped by class."""
     found = accounts(market, {}, base_only)
     weighed = criteria(market, found, {})
-    scores = score(market, weighed, {entry.refrigerant.designation: 0.06 for entry in market.entries})
+    scores = score(market, weighed, six_per_cent)
 
     assert [item.name for item in weighed] == list(CRITERIA)
     assert set(scores.not_ranked) == {"R454C"}

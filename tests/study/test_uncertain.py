@@ -6,7 +6,11 @@ import numpy as np
 import pytest
 from scipy import stats
 
+from retrofit.refrigerants import find
+from retrofit.study import Entry
+from retrofit.study.bands import error_parts, shared_errors
 from retrofit.study.spread import Spread
+from retrofit.study.states import Evidence
 from retrofit.study.uncertain import Uncertain, counted_inputs, physical_inputs, sample, stratified
 
 LIMITS = Spread(2.0, 3.0, 7.0)
@@ -38,6 +42,56 @@ def test_a_triangular_input_has_the_distribution_of_a_statistics_library():
     assert an_input(is_triangular=True).at(shares) == pytest.approx(reference.ppf(shares), rel=1e-9)
     assert drawn.mean() == pytest.approx(reference.mean(), rel=1e-3)
     assert drawn.var() == pytest.approx(reference.var(), rel=5e-3)
+
+
+def a_model_error(name: str, band: float = 0.08) -> Uncertain:
+    """Return the error of the COP of a refrigerant."""
+    parts = tuple((f"model.cop.{part}", weight) for part, weight in error_parts(find(name)).items())
+    spread = Spread(1.0 - band, 1.0, 1.0 + band)
+    return Uncertain(f"model.cop.{name}", name, "ratio", spread, "model", "a test", parts=parts)
+
+
+def test_the_error_of_the_model_is_normal_and_its_band_holds_ninety_per_cent():
+    """Standard deviation = band / 1.645, by scipy.stats.norm; 90 % of the draws lie within the band."""
+    drawn = sample([a_model_error("R448A")], 4000, 1).values["model.cop.R448A"][1:4001]
+
+    assert drawn.mean() == pytest.approx(1.0, abs=5e-4)
+    # The parts are stratified, their sum is not: a standard deviation of 4000 plain draws is known to 1.1 %.
+    assert drawn.std() == pytest.approx(0.08 / stats.norm.ppf(0.95), rel=0.035)
+    assert np.mean(np.abs(drawn - 1.0) <= 0.08) == pytest.approx(0.9, abs=0.015)  # 3 x sqrt(0.9 x 0.1 / 4000)
+    assert a_model_error("R448A").distribution == "normal"
+
+
+def test_sister_blends_err_together_in_part():
+    """The correlation of draws is that of the bands, so the joint samples hold a pair band in 90 % of the draws too."""
+    names = ("R448A", "R449A", "R22")
+    entries = [Entry(find(name), "convert", "ok", None, (), evidence=Evidence.NEAR) for name in names]
+    drawn = sample([a_model_error(name) for name in names], 4000, 1).values
+    errors = [drawn[f"model.cop.{name}"][1:4001] for name in names]
+
+    for i, j in ((0, 1), (0, 2)):
+        expected = shared_errors(entries[i], entries[j])
+        assert np.corrcoef(errors[i], errors[j])[0, 1] == pytest.approx(expected, abs=0.04)
+        band = 0.08 * np.sqrt(2.0 * (1.0 - expected))
+        assert np.mean(np.abs(errors[i] - errors[j]) <= band) == pytest.approx(0.9, abs=0.02)
+
+
+def test_what_is_one_thing_in_the_plant_moves_together(rack_of, money):
+    """Leak rate today and after a change, and the charge before and after: same place in their limits in every draw."""
+    case = rack_of(more=money + '\n[options.R448A]\ncharge = "230 kg"\n')
+    counted = {
+        "law.annual_leak_rate": Spread(0.1, 0.15, 0.2),
+        "emissions.leak_rate_after": Spread(0.04, 0.06, 0.09),
+        "plant.charge": Spread(250.0, 260.0, 270.0),
+        "options.R448A.charge": Spread(220.0, 230.0, 240.0),
+        "money.tariff": Spread(0.15, 0.18, 0.24),
+    }
+    drawn = sample(counted_inputs(case, counted), 300, 1).values
+    rank = {key: np.argsort(np.argsort(drawn[key][1:301])) for key in counted}
+
+    assert np.array_equal(rank["law.annual_leak_rate"], rank["emissions.leak_rate_after"])
+    assert np.array_equal(rank["plant.charge"], rank["options.R448A.charge"])
+    assert abs(np.corrcoef(rank["plant.charge"], rank["money.tariff"])[0, 1]) < 0.2
 
 
 def test_each_stratum_is_hit_once():

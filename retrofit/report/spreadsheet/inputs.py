@@ -105,7 +105,7 @@ def _limits(item: Uncertain, low: float | None, high: float | None) -> Row:
     return {
         LOW: low,
         HIGH: high,
-        "Distribution": "triangular" if item.is_triangular else "rectangular",
+        "Distribution": item.distribution,
         "Origin of the limits": ORIGINS[item.origin],
         "Why these limits": spelled(item.why),
     }

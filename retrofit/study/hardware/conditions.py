@@ -12,9 +12,10 @@ from retrofit.cycle import Cycle, Settings, Temperatures, compressor_pressures, 
 from retrofit.equipment.vessels import standstill
 from retrofit.errors import NoSolutionError, OutsideValidRangeError
 from retrofit.properties import Fluid
+from retrofit.study.efficiencies import CompressorModel
 from retrofit.study.gaps import KNOWN, Gap, not_given
 from retrofit.study.hardware.lines import number
-from retrofit.study.installed import EfficiencyModel, ExistingPlant
+from retrofit.study.installed import ExistingPlant
 from retrofit.study.performance import as_numbers, at_swept_volume, performance
 from retrofit.study.result import AtRest, Installed, Performance
 from retrofit.study.states import RestState
@@ -39,7 +40,7 @@ class Site:
 
     case: Case
     settings: Settings
-    model: EfficiencyModel
+    model: CompressorModel
     targets: Temperatures
     swept_volume_m3_per_s: float
     plant: ExistingPlant | None
@@ -54,7 +55,7 @@ class Found:
 
 
 def cycle_between(
-    behaviour: Fluid, p_evap_Pa: ArrayLike, p_cond_Pa: ArrayLike, settings: Settings, model: EfficiencyModel
+    behaviour: Fluid, p_evap_Pa: ArrayLike, p_cond_Pa: ArrayLike, settings: Settings, model: CompressorModel
 ) -> Cycle:
     """Return the cycle between two pressures, with the compressor's efficiencies at them.
 
@@ -67,7 +68,7 @@ def cycle_between(
     Raises: OutsideValidRangeError outside the range of the refrigerant's model.
     """
     p_suction, p_discharge = compressor_pressures(behaviour, p_evap_Pa, p_cond_Pa, settings)
-    isentropic, volumetric = model.at(p_discharge / p_suction, p_suction)
+    isentropic, volumetric = model.of(behaviour).at(p_discharge / p_suction, p_suction)
     own = replace(settings, isentropic_efficiency=isentropic, volumetric_efficiency=volumetric)
     return solve_cycle(behaviour, p_evap_Pa, p_cond_Pa, own)
 
