@@ -382,7 +382,7 @@ def _halved_side(
         is_colder = ~is_wide if side == 0 else is_wide
         low, high = np.where(is_colder, low, T[side]), np.where(is_colder, T[side], high)
     T[side] = 0.5 * (low + high)
-    return T
+    return np.asarray(T)
 
 
 def _error(state: _State) -> FloatArray:
@@ -437,7 +437,7 @@ def _stepped(
 
 
 def _reasons(T: FloatArray, now: _State, limits: tuple[float, float]) -> NDArray[np.str_]:
-    """Return why a condition has no solution: what the plant lacks at the end of its range, else that the search failed.
+    """Return why a condition has no solution: what it lacks at the end of its range, or that the search failed.
 
     Physics is named only where the equations show it: at a limit, still short of difference; or with no state at all.
     """
