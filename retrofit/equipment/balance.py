@@ -360,7 +360,7 @@ def _halved(
             break
         left, T = left[~is_solved], T[:, ~is_solved]
         given = {name: array[~is_solved] for name, array in given.items()}
-    return found
+    return np.asarray(found)
 
 
 def _halved_side(
