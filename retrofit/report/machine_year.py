@@ -271,6 +271,7 @@ def _against(as_is: Prospect, option: Prospect) -> dict[str, Any] | None:
                 "ratio": number(change.ratio),
                 "is_alike": change.is_alike,
                 "missing": change.missing or None,
+                "losses_on_one_side": [loss.value for loss in change.one_sided],
             }
             for name, change in found.items()
         },

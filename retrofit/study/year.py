@@ -15,8 +15,10 @@ from retrofit.equipment.balance import Machine, balance
 from retrofit.errors import NoSolutionError
 from retrofit.properties import Fluid
 from retrofit.study.installed import ExistingPlant, machine_at
+from retrofit.study.losses import Loss
 from retrofit.study.operating import balanced, delivered_W, fans_share, operating
 from retrofit.study.performance import electric_W
+from retrofit.study.plan import Use
 from retrofit.study.result import FloatArray, Operation, Performance
 
 IntArray = NDArray[np.int64]
@@ -120,6 +122,7 @@ class YearRun:
         monthly_J: Electricity by month, shape (12,); None for bins.
         by_air: The year sorted by outdoor temperature; None for a plant reckoned by its maker's seasonal COP.
         map: Over the temperatures at the inlets; None likewise.
+        one_sided: Of a plant by its maker's seasonal COP, losses in that which the year of the plant as it is lacks.
     """
 
     machine: str
@@ -142,6 +145,12 @@ class YearRun:
     monthly_J: FloatArray | None
     by_air: AirBins | None
     map: PlantMap | None
+    one_sided: tuple[Loss, ...] = ()
+
+    @property
+    def use(self) -> Use:
+        """Return what emissions and money ask of the year."""
+        return Use(self.energy_J, self.peak_W, self.one_sided)
 
 
 # What the year asks
