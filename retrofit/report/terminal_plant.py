@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Sequence
+from collections.abc import Callable, Iterator, Sequence
 
 from retrofit.checks.readings import Outcome
 from retrofit.report.agreeing import agreements
@@ -12,6 +12,7 @@ from retrofit.report.plant import cooling_needed_text, has_plant, plant_reason, 
 from retrofit.report.text_table import GAP, Column, paragraph, text_table, width
 from retrofit.study import Comparison, Entry
 from retrofit.study.bands import pair_band
+from retrofit.study.performance import capped_superheat_K
 from retrofit.units import UnitSystem, format_number, told
 
 Emphasis = Callable[[str], str]
@@ -60,11 +61,23 @@ def plant_text(comparison: Comparison, units: UnitSystem, columns: int, strong: 
     lines = [heading, paragraph(convention, columns), _plant_table(comparison, units)]
     if any(entry.plant and not entry.plant.is_covered for entry in comparison.entries):
         lines.append(paragraph(f"{OUTSIDE} outside the data of the compressor: carried on beyond them.", columns))
+    lines += [paragraph(text, columns) for text in _capped(comparison, units)]
     lines += [
         paragraph(f"{entry.refrigerant.designation} not computed: {plant_reason(comparison, entry)}.", columns)
         for entry in without
     ]
     return "\n".join(lines)
+
+
+def _capped(comparison: Comparison, units: UnitSystem) -> Iterator[str]:
+    """Yield where the evaporator gives less superheat than is set."""
+    kind, unit = "temperature difference", units.label("temperature difference")
+    wanted = units.text(kind, comparison.case.duty.useful_superheat_K)
+    for entry in comparison.entries:
+        used = capped_superheat_K(comparison.case, entry.plant.full) if entry.plant else None
+        if used is not None:
+            told = f"useful superheat {units.text(kind, used)} {unit}, not {wanted}: the evaporator gives no more."
+            yield f"{entry.refrigerant.display_name}: {told}"
 
 
 def _plant_table(comparison: Comparison, units: UnitSystem) -> str:

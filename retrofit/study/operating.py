@@ -124,7 +124,7 @@ def _stepped(
             lower, why = (at_loads(delivered_W(just, serves)), at_loads(just.power_W)), at_loads(found.reason)
         # A step that is not solved leaves its loads without a solution too.
         here = below & ~(needed < lower[0])
-        way = (needed - lower[0]) / (upper[0] - lower[0])
+        way = (needed - lower[0]) / np.where(here, upper[0] - lower[0], 1.0)
         power = np.where(here, lower[1] + way * (upper[1] - lower[1]), power)
         share = np.where(here, (step + way) / count, share)
         run_time = np.where(here, way if step == 0 else np.where(np.isnan(way), np.nan, 1.0), run_time)
