@@ -38,7 +38,7 @@ def test_numbers_of_the_same_plant_are_the_results(assessed):
     """Dew points, discharge, cooling, changes, running time and what is lacking, rounded to the digits shown."""
     result = assessed("harbour-market")
     text = comparison_text(result, SI, 100)
-    for entry in result.candidates:
+    for entry in (entry for entry in result.candidates if not entry.is_new_plant):
         evap, cond, discharge, cooling, capacity, cop, runs, speed, lacks = cells(text, entry.refrigerant.display_name)
 
         assert number(evap) == pytest.approx(entry.plant.full.T_evap_dew_K - 273.15, abs=0.051)
