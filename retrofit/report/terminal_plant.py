@@ -70,14 +70,16 @@ def plant_text(comparison: Comparison, units: UnitSystem, columns: int, strong: 
 
 
 def _capped(comparison: Comparison, units: UnitSystem) -> Iterator[str]:
-    """Yield where the evaporator gives less superheat than is set."""
+    """Yield for which refrigerants the evaporator gives less superheat than is set, if there are any."""
     kind, unit = "temperature difference", units.label("temperature difference")
-    wanted = units.text(kind, comparison.case.duty.useful_superheat_K)
+    found = []
     for entry in comparison.entries:
         used = capped_superheat_K(comparison.case, entry.plant.full) if entry.plant else None
         if used is not None:
-            told = f"useful superheat {units.text(kind, used)} {unit}, not {wanted}: the evaporator gives no more."
-            yield f"{entry.refrigerant.display_name}: {told}"
+            found.append(f"{entry.refrigerant.display_name} {units.text(kind, used)}")
+    if found:
+        wanted = units.text(kind, comparison.case.duty.useful_superheat_K)
+        yield f"Useful superheat below the {wanted} {unit} set, all that the evaporator gives: {', '.join(found)} {unit}."
 
 
 def _plant_table(comparison: Comparison, units: UnitSystem) -> str:
