@@ -79,7 +79,8 @@ def _capped(comparison: Comparison, units: UnitSystem) -> Iterator[str]:
             found.append(f"{entry.refrigerant.display_name} {units.text(kind, used)}")
     if found:
         wanted = units.text(kind, comparison.case.duty.useful_superheat_K)
-        yield f"Useful superheat below the {wanted} {unit} set, all that the evaporator gives: {', '.join(found)} {unit}."
+        told = f"Useful superheat below the {wanted} {unit} set, all that the evaporator gives"
+        yield f"{told}: {', '.join(found)} {unit}."
 
 
 def _plant_table(comparison: Comparison, units: UnitSystem) -> str:
