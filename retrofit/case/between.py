@@ -176,7 +176,9 @@ def _room_height(written: Written) -> Complaints:
 
 
 def _speed(written: Written) -> Complaints:
-    for name, wanted in (("steps", "steps"), ("lowest_speed", "variable")):
+    if written.raw("compressor.speed") == "steps" and not written.has("compressor.steps"):
+        yield path_of("compressor.speed"), 'how many steps is not said; add steps to [compressor], or write "fixed"'
+    for name, wanted in (("steps", "steps"), ("own_condensers", "steps"), ("lowest_speed", "variable")):
         if written.has(f"compressor.{name}") and written.raw("compressor.speed") != wanted:
             yield path_of(f"compressor.{name}"), f'{name} goes with speed = "{wanted}"; write that, or leave {name} out'
 

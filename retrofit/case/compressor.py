@@ -6,6 +6,7 @@ from typing import Annotated
 
 from pydantic import Field
 
+from retrofit.case.dates import YesNo
 from retrofit.case.numbers import EfficiencyPoint, Number, OneOf, PointValue
 from retrofit.case.table import Items, Table, WhyDefault, key
 from retrofit.case.values import Choice, Quantity
@@ -129,6 +130,9 @@ class Compressor(Table):
     )
     steps: Annotated[int | None, Number(2, 100, "one step is a fixed speed", whole=True, example="4")] = key(
         "steps", "Number of capacity steps.", None
+    )
+    own_condensers: Annotated[bool | None, YesNo()] = key(
+        "own_condensers", "Whether each step has its own part of the condenser, whose fans stop with it.", None
     )
     lowest_speed: Annotated[
         float | None,

@@ -59,6 +59,7 @@ volumetric_efficiency = 0.90
 # speed = "variable"             # fixed, steps or variable
 # lowest_speed = "30 %"          # with variable
 #| steps = 4                     # with speed = "steps"
+#| own_condensers = true         # likewise: each step has its own part of the condenser, whose fans stop with it
 # rated_current = "50 A"         # nameplates of all motors
 # rated_power = "25 kW"
 # highest_suction = "0 degC"     # highest evaporating temperature, at pull-down

@@ -265,7 +265,8 @@ def _running(comparison: Comparison, entry: Entry) -> str:
     band = pair_band(comparison.existing, entry, "cop")
     near = "≈\N{NO-BREAK SPACE}" if abs(cop - 1.0) <= band else ""
     share = run.unmet_W / run.cooling_needed_W
-    parts = [f"at {run.speed_fraction:.0%} speed"] if run.speed_fraction < 1.0 else []
+    of = "of its steps" if run.control == "steps" else "speed"
+    parts = [f"at {run.speed_fraction:.0%} {of}"] if run.speed_fraction < 1.0 else []
     if run.run_time_fraction < 1.0 or not parts:
         parts.insert(0, f"{run.run_time_fraction:.0%} of the time")
     amount = " ".join(parts)

@@ -22,6 +22,7 @@ from retrofit.checks.prospects import (
     FAR_FROM_METER,
     KEPT,
     NO_MONEY,
+    Difference,
     Headline,
     Prospect,
     Ranked,
@@ -243,7 +244,8 @@ def _by_difference(
             continue  # the same plant: the same electricity
         change = difference(options[0], option, quantity)
         if change.amount is None:
-            found.setdefault(_unknown(option, change.missing), []).append(option.name)
+            heading = change.missing if change.one_sided else _unknown(option, change.missing)
+            found.setdefault(heading, []).append(option.name)
         else:
             where = near if change.is_alike else less if change.amount < 0.0 else more
             found[where].append(f"{option.name} {amount(option)}")
@@ -659,7 +661,7 @@ def _named(comparison: Comparison, options: Sequence[Prospect]) -> list[Prospect
 
 def _cost_words(comparison: Comparison, units: UnitSystem, as_is: Prospect, option: Prospect) -> str:
     year, warming = difference(as_is, option, "energy"), difference(as_is, option, "emissions")
-    parts = [_year_words(year.ratio, year.is_alike, year.missing)]
+    parts = [_year_words(year)]
     if comparison.case.money is not None:
         parts = [f"first cost {_first_cost_words(comparison, option)}", *parts, *_pays_words(comparison, as_is, option)]
     if warming.ratio is not None:
@@ -686,9 +688,12 @@ def _pays_words(comparison: Comparison, as_is: Prospect, option: Prospect) -> It
         yield f"net present value {_with_band(comparison, lead, signed=True)}"
 
 
-def _year_words(ratio: float | None, is_near: bool, missing: str) -> str:
+def _year_words(change: Difference) -> str:
+    ratio, is_near = change.ratio, change.is_alike
+    if change.one_sided:
+        return f"electricity {change.missing}"
     if ratio is None:
-        return f"electricity unknown ({missing})"
+        return f"electricity unknown ({change.missing})"
     more = "less" if ratio < 0.0 else "more"
     if ratio == 0.0:
         return "the same electricity"

@@ -13,8 +13,8 @@ from retrofit.study.accounts import Account
 from retrofit.study.bands import alike, groups_alike, pair_band
 from retrofit.study.criteria import criteria
 from retrofit.study.life import Certainty, Life
+from retrofit.study.losses import Loss, one_sided_words
 from retrofit.study.money import Payback, payback_of
-from retrofit.study.plan import Use
 from retrofit.study.ranking import Flip, Order, Scores, Stability, flip, order, rank_stability, score
 from retrofit.study.spread import at
 from retrofit.study.sums import ComparisonState, Sum
@@ -58,13 +58,15 @@ class Difference:
         amount: Its number less that of the plant as it is; None where `missing` says why. [J, kg CO2e]
         ratio: Amount over the number of the plant as it is.
         is_alike: Whether the model cannot tell them apart.
-        missing: What is missing.
+        missing: What is missing, or why the two are not compared.
+        one_sided: Losses that only one of the two counts: they are not compared.
     """
 
     amount: float | None
     ratio: float | None
     is_alike: bool
     missing: str
+    one_sided: tuple[Loss, ...] = ()
 
 
 def life_of_result(comparison: Comparison) -> Life:
@@ -121,6 +123,8 @@ def difference(as_is: Prospect, option: Prospect, quantity: str) -> Difference:
         quantity: "energy" of a year, or "emissions" over the remaining life. [-]
     """
     here, there = _number(option, quantity), _number(as_is, quantity)
+    if lacks := _one_sided(as_is, option):
+        return Difference(None, None, False, one_sided_words(lacks), lacks)
     if here is None or there is None:
         return Difference(None, None, False, _missing(option, quantity) or _missing(as_is, quantity))
     amount = here[0] - there[0]
@@ -137,12 +141,18 @@ def is_alike(one: Prospect, other: Prospect, quantity: str) -> bool:
             life. [-]
     """
     a, b = _number(one, quantity), _number(other, quantity)
-    if a is None or b is None:
+    if a is None or b is None or _one_sided(one, other):
         return False
     if one.entry is other.entry:
         return a[0] == b[0]
     name = "emissions" if quantity == "emissions" else "energy"
     return alike(one.entry, other.entry, name, (a[0], b[0]), (a[1], b[1]))
+
+
+def _one_sided(one: Prospect, other: Prospect) -> tuple[Loss, ...]:
+    """Return the losses that the electricity of one of two options counts and that of the other lacks."""
+    here, there = (option.year.one_sided if option.year else () for option in (one, other))
+    return () if here == there else here or there
 
 
 def groups(options: Sequence[Prospect], quantity: str) -> tuple[tuple[Prospect, ...], ...]:
@@ -152,7 +162,11 @@ def groups(options: Sequence[Prospect], quantity: str) -> tuple[tuple[Prospect, 
         options: The options, of one refrigerant each.
         quantity: As for `difference`. [-]
     """
-    known = [(option, number) for option in options if (number := _number(option, quantity)) is not None]
+    known = [
+        (option, number)
+        for option in options
+        if (number := _number(option, quantity)) is not None and not _one_sided(options[0], option)
+    ]
     entries = [option.entry for option, _ in known]
     found = groups_alike(entries, "emissions", [number[0] for _, number in known], [number[1] for _, number in known])
     return tuple(tuple(option for option, _ in known if option.entry in group) for group in found)
@@ -364,7 +378,7 @@ def ranked(comparison: Comparison) -> Ranked:
         comparison: An assessed result with its remaining life.
     """
     life = life_of_result(comparison)
-    uses = {name: Use(year.energy_J, year.peak_W) for name, year in life.years.items()}
+    uses = {name: year.use for name, year in life.years.items()}
     measured = criteria(comparison, life.accounts, uses)
     scores = score(comparison, measured, lambda a, b: pair_band(a, b, "cop"))
     if not scores.names or not scores.criteria:

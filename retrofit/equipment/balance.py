@@ -4,6 +4,10 @@ Two unknowns for each condition, the evaporating and the condensing dew temperat
 exchanger: the mean temperature difference the temperatures give equals the one its conductance asks for. They are
 solved on whole arrays of conditions by Newton's method with Broyden's update of the slopes. Where a head-pressure
 control holds the condensing pressure, that pressure takes the place of the condenser's equation.
+
+At low load a gliding refrigerant comes so close to its medium that the difference there is gone within hundredths of a
+kelvin: Newton's method jumps over that place. Each equation alone rises or falls all the way with its own temperature,
+so what Newton's method leaves is halved in between, one temperature after the other, and finished with finer slopes.
 """
 
 from __future__ import annotations
@@ -24,7 +28,12 @@ Efficiencies = Callable[[FloatArray, FloatArray], tuple[FloatArray, FloatArray]]
 
 RESIDUAL_TOLERANCE = 1e-9  # aimed at, relative; a condition counts as solved below 1e-6
 SOLVED_BELOW = 1e-6
-MOST_STEPS = 40
+MOST_STEPS = 16
+FINISHING_STEPS = 10
+SLOPE_STEP_K, FINE_STEP_K = 0.05, 1e-5  # for slopes, far away and where a difference closes
+HALVINGS = 20  # of the whole range, to less than a thousandth of a kelvin
+SMALL_LIFT_K = 15.0  # between dew temperatures: below it subcooled liquid may not boil, above it gas may be too hot
+SWEEPS = 3  # over both temperatures: each moves the other's root little
 LONGEST_STEP_K = 10.0
 SMALLEST_LEAD_K = 0.1
 STILL_OPEN = 0.7  # share of conditions below which those that are settled are put aside
@@ -86,8 +95,8 @@ class Balance:
         cycle: The cycle it settles on.
         mass_flow_kg_per_s: Refrigerant flow.
         swept_volume_m3_per_s: Swept volume, given or found.
-        residual: Larger relative error of the two equations.
-        reason: Empty where solved, else why there is no solution.
+        residual: Larger relative error of the two equations, where the search came closest.
+        reason: Empty where solved, else why there is no solution; `NOT_CONVERGED` where only the search failed.
     """
 
     cycle: Cycle
@@ -187,6 +196,7 @@ def balance(
 
 SETTINGS = tuple(item.name for item in fields(Settings) if not item.name.endswith("efficiency"))
 SERVES = ("cooling", "heating")
+NOT_CONVERGED = "the search did not converge: a failure of the computation, not of the plant"
 LIMITS = ("superheat_share", "subcooling_share", "isentropic_factor", "volumetric_factor", "T_cond_lowest_K")
 
 
@@ -279,16 +289,27 @@ def _in_reach(
 def _solve(fluid: Fluid, machine: Machine, conditions: _Conditions) -> Balance:
     """Solve a chunk of conditions."""
     given = conditions.arrays
-    lowest, highest = fluid.T_range_K[0] + 0.5, fluid.T_range_K[1] - 0.05
-    start = np.clip(np.stack([given["T_evap"], given["T_cond"]]), lowest, highest)
-    T, now = _settled(fluid, machine, given, start, (lowest, highest))
+    limits = fluid.T_range_K[0] + 0.5, fluid.T_range_K[1] - 0.05
+    start = np.clip(np.stack([given["T_evap"], given["T_cond"]]), *limits)
+    T, now = _settled(fluid, machine, given, start, limits)
     error = np.max(_error(now), axis=0)
-    solved = error < SOLVED_BELOW
-    return _balance(now, error, np.where(solved, "", _reasons(T, given, lowest, highest)))
+    left = error >= SOLVED_BELOW
+    if np.any(left):
+        T[:, left] = _halved(fluid, machine, {name: array[left] for name, array in given.items()}, limits)
+        now = _state(fluid, machine, given, T)
+        error = np.minimum(error, np.max(_error(now), axis=0))
+    reason = np.where(error < SOLVED_BELOW, "", _reasons(T, now, limits))
+    return _balance(now, error, reason)
 
 
 def _settled(
-    fluid: Fluid, machine: Machine, conditions: Mapping[str, FloatArray], T: FloatArray, limits: tuple[float, float]
+    fluid: Fluid,
+    machine: Machine,
+    conditions: Mapping[str, FloatArray],
+    T: FloatArray,
+    limits: tuple[float, float],
+    most_steps: int = MOST_STEPS,
+    slope_step_K: float = SLOPE_STEP_K,
 ) -> tuple[FloatArray, _State]:
     """Return where conditions settle, or where the search for that ended: temperatures, shape (2, n), and the state."""
 
@@ -298,7 +319,7 @@ def _settled(
     given = conditions
     found, active = T.copy(), np.arange(T.shape[1])
     now, slopes = at(T), None
-    for _ in range(MOST_STEPS):
+    for _ in range(most_steps):
         is_open = np.any(_error(now) > RESIDUAL_TOLERANCE, axis=0)
         if not np.any(is_open):
             break
@@ -309,12 +330,59 @@ def _settled(
             given = {name: array[is_open] for name, array in given.items()}
             now, slopes = at(T), None if slopes is None else slopes[:, :, is_open]
         if slopes is None:
-            slopes = _slopes(fluid, machine, given, T, now.lack)
+            slopes = _slopes(fluid, machine, given, T, now.lack, slope_step_K)
         T, now, slopes = _stepped(at, T, now, slopes, _newton_step(slopes, now.lack), limits)
     if active.size == found.shape[1]:
         return T, now
     found[:, active] = T
     return found, _state(fluid, machine, conditions, found)
+
+
+def _halved(
+    fluid: Fluid, machine: Machine, conditions: Mapping[str, FloatArray], limits: tuple[float, float]
+) -> FloatArray:
+    """Return where conditions settle by halving each temperature's range in turn, or where that ended. [K]
+
+    Source: with the other temperature held, the evaporator's difference shrinks as evaporating gets warmer and the
+        condenser's grows as condensing gets hotter, so each has one root; Newton's method finishes from there.
+    """
+    given, left = conditions, np.arange(conditions["T_evap"].size)
+    T = np.clip(np.stack([given["T_in_evap"], given["T_in_cond"]]) + np.array([[-5.0], [5.0]]), *limits)
+    T[1] = np.maximum(T[1], np.minimum(T[0] + 5.0, limits[1]))
+    found = T.copy()
+    for _ in range(SWEEPS):
+        for side in (0, 1):
+            T = _halved_side(fluid, machine, given, T, side, limits)
+        finished, now = _settled(fluid, machine, given, T, limits, FINISHING_STEPS, FINE_STEP_K)
+        is_solved = np.max(_error(now), axis=0) < SOLVED_BELOW
+        found[:, left] = np.where(is_solved, finished, T)
+        if np.all(is_solved):
+            break
+        left, T = left[~is_solved], T[:, ~is_solved]
+        given = {name: array[~is_solved] for name, array in given.items()}
+    return np.asarray(found)
+
+
+def _halved_side(
+    fluid: Fluid,
+    machine: Machine,
+    given: Mapping[str, FloatArray],
+    T: FloatArray,
+    side: int,
+    limits: tuple[float, float],
+) -> FloatArray:
+    """Return temperatures with one of them where its own equation holds, the other as it is. [K]"""
+    low, high = np.full(T.shape[1], limits[0]), np.full(T.shape[1], limits[1])
+    T = T.copy()
+    for _ in range(HALVINGS):
+        T[side] = 0.5 * (low + high)
+        lack = _state(fluid, machine, given, T).lack[side]
+        # No state: either there is hardly anything to compress, or the compressed gas is too hot for the model.
+        is_wide = np.where(np.isnan(lack), T[1] - T[0] > SMALL_LIFT_K, lack > 0.0)
+        is_colder = ~is_wide if side == 0 else is_wide
+        low, high = np.where(is_colder, low, T[side]), np.where(is_colder, T[side], high)
+    T[side] = 0.5 * (low + high)
+    return np.asarray(T)
 
 
 def _error(state: _State) -> FloatArray:
@@ -324,10 +392,9 @@ def _error(state: _State) -> FloatArray:
 
 
 def _slopes(
-    fluid: Fluid, machine: Machine, given: Mapping[str, FloatArray], T: FloatArray, lack: FloatArray
+    fluid: Fluid, machine: Machine, given: Mapping[str, FloatArray], T: FloatArray, lack: FloatArray, small: float
 ) -> FloatArray:
     """Return the slopes of both equations along both temperatures, shape (2, 2, n), by small steps taken in one go."""
-    small = 0.05
     places = np.concatenate([T + small * unit[:, None] for unit in np.eye(2)], axis=1)
     twice = {name: np.tile(array, 2) for name, array in given.items()}
     beside = np.split(_state(fluid, machine, twice, places).lack, 2, axis=1)
@@ -369,18 +436,27 @@ def _stepped(
     return new_T, new, slopes + np.where(np.isfinite(update), update, 0.0)
 
 
-def _reasons(T: FloatArray, given: Mapping[str, FloatArray], lowest: float, highest: float) -> NDArray[np.str_]:
-    """Return why a condition has no solution, from where the search ended."""
-    edge = 0.1
-    warmest = given["T_in_evap"] - given["useful_superheat_K"]
+def _reasons(T: FloatArray, now: _State, limits: tuple[float, float]) -> NDArray[np.str_]:
+    """Return why a condition has no solution: what it lacks at the end of its range, or that the search failed.
+
+    Physics is named only where the equations show it: at a limit, still short of difference; or with no state at all.
+    """
+    edge, (lowest, highest) = 0.1, limits
+    is_nothing = np.isnan(now.lack).any(axis=0)
     return np.select(
-        [T[0] < lowest + edge, T[1] > highest - edge, T[0] > warmest - 0.5],
+        [
+            (T[0] < lowest + edge) & ~(now.lack[0] > 0.0),
+            (T[1] > highest - edge) & ~(now.lack[1] > 0.0),
+            is_nothing & (T[1] - T[0] < SMALL_LIFT_K),
+            is_nothing & np.isfinite(T).all(axis=0),
+        ],
         [
             f"evaporating would fall below {lowest - ZERO_C_K:.0f} degC, where the refrigerant's model begins",
             f"condensing would rise to {highest - ZERO_C_K:.0f} degC, too close to the critical point",
-            "the medium at the evaporator is not warm enough for the superheat set: the exchanger is hardly loaded",
+            "condensing would come as low as evaporating: there is nothing to compress",
+            "the compressed gas would be hotter than the refrigerant's model reaches",
         ],
-        "no evaporating and condensing temperature satisfies both exchangers",
+        NOT_CONVERGED,
     )
 
 

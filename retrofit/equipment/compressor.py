@@ -1,4 +1,4 @@
-"""Compressor: its efficiencies over pressure ratio, its motor, and how it meets a part load.
+"""Compressor: its efficiencies over pressure ratio, and its motor.
 
 `EfficiencyCurve` and `EfficiencyMap` are asked in the same way, `at(pressure_ratio, p_suction_Pa)`, and hold their
 nearest value outside the data; `covers` says where that is. NaN goes in and comes out.
@@ -22,7 +22,6 @@ FEWEST_POINTS = 2
 ROUNDED_SHARE = 0.05  # of the first and last interval: there the curve turns level
 ROUNDING = 1e-9  # allowed at the ends of a range, relative
 RATIOS, SUCTIONS = 15, 9  # samples of a map from which its curve is made
-KINDS = ("fixed", "steps", "variable")
 MEASURED_AT = ("shaft", "electric")
 
 
@@ -295,41 +294,3 @@ def _refuse(what: str, values: FloatArray, is_bad: BoolArray, allowed: str) -> N
 
 
 # -- part load ---------------------------------------------------------------------------------------
-
-
-def operation(kind: str, steps: int, lowest_speed: float, needed_over_full: ArrayLike) -> tuple[FloatArray, FloatArray]:
-    """Return how a compressor meets a part load: share of the time it runs, and speed while it runs.
-
-    A stepped machine (several compressors, or cylinders unloaded) changes between the two steps around the load; the
-    speed is its mean, so that the answer does not jump when a candidate passes a step.
-
-    Args:
-        kind: "fixed" runs fully or not at all; "steps" has equal steps down to one; "variable" has any speed from
-            the lowest up.
-        steps: Number of equal steps, for "steps" alone. [-]
-        lowest_speed: Lowest speed over full speed, for "variable" alone. [-]
-        needed_over_full: Swept volume flow, or capacity, needed over that at full speed. [-]
-    Returns: Run time fraction and speed fraction; their product is what is needed, at most 1 where the machine is
-        too small. A load of zero or below: it stands, at the lowest speed it has. NaN goes through. [-]
-    Raises: QuantityError for another kind, fewer than one step or a lowest speed not above 0 and at most 1.
-    Source: definitions; losses of starting and of changing steps are not counted.
-    """
-    lowest = _lowest_speed(kind, steps, lowest_speed)
-    needed = np.clip(np.asarray(needed_over_full, dtype=float), 0.0, 1.0)
-    speed = np.maximum(needed, lowest)
-    return np.asarray(needed / speed), np.asarray(speed)
-
-
-def _lowest_speed(kind: str, steps: int, lowest_speed: float) -> float:
-    """Return the speed below which a machine can only start and stop, over full speed."""
-    if kind not in KINDS:
-        raise QuantityError(f"compressor control {kind!r} is none of {', '.join(KINDS)}")
-    if kind == "fixed":
-        return 1.0
-    if kind == "steps":
-        if steps < 1:
-            raise QuantityError(f"a compressor with {steps} steps cannot run; give 1 or more")
-        return 1.0 / steps
-    if not 0.0 < lowest_speed <= 1.0:
-        raise QuantityError(f"lowest speed {lowest_speed:g} is not above 0 and at most 1 (100 %)")
-    return lowest_speed

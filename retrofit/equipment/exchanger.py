@@ -76,7 +76,6 @@ def _mean_of_parts(difference: FloatArray, share: FloatArray) -> FloatArray:
 
 def _behind_effectiveness(mean_lead: FloatArray, change: FloatArray) -> FloatArray:
     """Return heat / UA where heat / C = change and heat = C (1 - exp(-UA/C)) x mean lead."""
-    effectiveness = change / np.maximum(mean_lead, SMALLEST_DIFFERENCE_K)
-    possible = effectiveness < 1.0 - 1e-9
-    units = -np.log1p(-np.where(possible, effectiveness, 0.5))
+    possible = change < mean_lead * (1.0 - 1e-9)
+    units = -np.log1p(-np.where(possible, change / np.where(possible, mean_lead, 1.0), 0.5))
     return np.where(possible, change / units, np.minimum(mean_lead - change, 0.0))

@@ -13,7 +13,6 @@ from retrofit.study import Comparison
 from retrofit.study.accounts import accounts
 from retrofit.study.bands import pair_band
 from retrofit.study.criteria import CRITERIA, criteria
-from retrofit.study.plan import Use
 from retrofit.study.ranking import (
     EQUAL_WEIGHT,
     LARGEST_WEIGHT,
@@ -91,7 +90,7 @@ def weighing(view: Comparison, state: State) -> Weighing:
         state: The state.
     """
     weights = {name: float(dict(state.weights).get(name, USUAL)) for name in CRITERIA}
-    uses = {name: Use(year.energy_J, year.peak_W) for name, year in view.life.years.items()} if view.life else {}
+    uses = {name: year.use for name, year in view.life.years.items()} if view.life else {}
     measured = criteria(view, accounts(view, uses), uses, index=1)
     scores = score(view, measured, lambda a, b: pair_band(a, b, "cop"))
     found = order(scores, weights)

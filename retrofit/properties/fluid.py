@@ -178,7 +178,7 @@ class Fluid:
         dew = self.dew(p_Pa)
         above = np.asarray(s_J_per_kgK, dtype=float) - dew.s_J_per_kgK
         highest = self.tables.by_entropy.y[-1]
-        above = self._inside("entropy above the dew point", above, -np.inf, highest, "J/(kg K)")
+        above = self._not_too_hot(above, highest, dew)
         (h,) = self.tables.by_entropy(np.log(dew.p_Pa), np.maximum(above, 0.0), 0)
         h = dew.h_J_per_kg + h
         wet = above < 0.0
@@ -205,7 +205,7 @@ class Fluid:
         """
         dew = self.dew(p_Pa)
         above = np.asarray(h_J_per_kg, dtype=float) - dew.h_J_per_kg
-        above = self._inside("enthalpy above the dew point", above, -np.inf, self.tables.by_enthalpy.y[-1], "J/kg")
+        above = self._not_too_hot(above, self.tables.by_enthalpy.y[-1], dew)
         (heat,) = self.tables.by_enthalpy(np.log(dew.p_Pa), np.maximum(above, 0.0), 0)
         T = dew.T_K + heat
         wet = above < 0.0
@@ -322,6 +322,20 @@ class Fluid:
 
     def _pressure_inside(self, p_Pa: ArrayLike, ln_p: FloatArray, what: str) -> FloatArray:
         return self._inside(what, p_Pa, np.exp(ln_p[0]), np.exp(ln_p[-1]), "Pa")
+
+    def _not_too_hot(self, above: FloatArray, highest: float, dew: State) -> FloatArray:
+        """Return enthalpy or entropy above the dew point where the model reaches; a reader is told in temperatures."""
+        outside = above > highest + ENDS * max(abs(highest), 1.0)
+        if self.lenient or not np.any(outside):
+            return self._inside("gas above the dew point", above, -np.inf, highest, "")
+        place = int(np.argmax(outside))
+        p, T = (np.broadcast_to(values, outside.shape).flat[place] for values in (dew.p_Pa, dew.T_K))
+        (heat,) = self.tables.by_enthalpy(np.log(p), self.tables.by_enthalpy.y[-1], 0)
+        hottest_K = float(T + min(float(heat), self.tables.vapour.y[-1]))
+        raise OutsideValidRangeError(
+            f"{self.designation}: at {_shown(float(p), 'Pa')} the gas would be hotter than "
+            f"{hottest_K - ZERO_C_K:.0f} degC, where its model ends"
+        )
 
     def _inside(self, what: str, value: ArrayLike, low: ArrayLike, high: ArrayLike, unit: str) -> FloatArray:
         """Return `value` as an array if it lies in the range; else raise, or put NaN where it does not."""

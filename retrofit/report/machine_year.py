@@ -36,9 +36,8 @@ from retrofit.study.year import AirBins, PlantMap, YearRun
 from retrofit.units import SI
 
 SCHEMA = "retrofit.year/1"
-NUMBERS = [
-    item.name for item in fields(YearRun) if item.name not in ("machine", "reason", "monthly_J", "by_air", "map")
-]
+NOT_NUMBERS = ("machine", "reason", "monthly_J", "by_air", "map", "one_sided")
+NUMBERS = [item.name for item in fields(YearRun) if item.name not in NOT_NUMBERS]
 # Results by their name here; what is money carries the word currency, what is a time in years or hours keeps its own.
 RENAMED = {
     "first_cost": "first_cost_currency",
@@ -271,6 +270,7 @@ def _against(as_is: Prospect, option: Prospect) -> dict[str, Any] | None:
                 "ratio": number(change.ratio),
                 "is_alike": change.is_alike,
                 "missing": change.missing or None,
+                "losses_on_one_side": [loss.value for loss in change.one_sided],
             }
             for name, change in found.items()
         },

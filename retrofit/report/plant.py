@@ -8,6 +8,7 @@ from retrofit.report.rows import change_row, change_text, near, quantity_row
 from retrofit.report.table import Cell, Group, Notes, Row
 from retrofit.study import Comparison, Entry
 from retrofit.study.bands import pair_band
+from retrofit.study.performance import capped_superheat_K
 from retrofit.units import MISSING, UnitSystem, stacked
 
 HELD = "existing compressor and exchangers, same air, water or brine; pressures float"
@@ -102,8 +103,24 @@ def _settled(comparison: Comparison, units: UnitSystem) -> tuple[Row, ...]:
         *rows,
         quantity_row("Pressure ratio", "ratio", _values(comparison, "full.pressure_ratio"), units),
         quantity_row("Discharge temperature", "temperature", _values(comparison, "full.T_discharge_K"), units),
+        *_superheat_rows(comparison, units),
         Row("Inside the compressor's data", "", tuple(Cell(words[is_in], is_number=False) for is_in in covered)),
     )
+
+
+def _superheat_rows(comparison: Comparison, units: UnitSystem) -> tuple[Row, ...]:
+    """Return the row of the superheat that the evaporator really gives, if for any refrigerant it is less than set."""
+    capped = [
+        capped_superheat_K(comparison.case, entry.plant.full) if entry.plant else None for entry in comparison.entries
+    ]
+    if all(superheat is None for superheat in capped):
+        return ()
+    set_K = comparison.case.duty.useful_superheat_K
+    used = [
+        None if entry.plant is None else set_K if superheat is None else superheat
+        for entry, superheat in zip(comparison.entries, capped, strict=True)
+    ]
+    return (quantity_row("Useful superheat that the evaporator gives", "temperature difference", used, units),)
 
 
 def _full(comparison: Comparison, units: UnitSystem) -> tuple[Row, ...]:

@@ -83,6 +83,8 @@ class Options:
             if option is self.all[0]:
                 return Cell(MISSING)
             found = difference(self.all[0], option, quantity)
+            if found.one_sided:
+                return Cell(MISSING, marks=(self.notes.mark(shown_name(option), found.missing),))
             if found.ratio is None:
                 return self.unknown(option, found.missing)
             text = percent(found.ratio).removesuffix("\N{NO-BREAK SPACE}%")

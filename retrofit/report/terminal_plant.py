@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Sequence
+from collections.abc import Callable, Iterator, Sequence
 
 from retrofit.checks.readings import Outcome
 from retrofit.report.agreeing import agreements
@@ -12,6 +12,7 @@ from retrofit.report.plant import cooling_needed_text, has_plant, plant_reason, 
 from retrofit.report.text_table import GAP, Column, paragraph, text_table, width
 from retrofit.study import Comparison, Entry
 from retrofit.study.bands import pair_band
+from retrofit.study.performance import capped_superheat_K
 from retrofit.units import UnitSystem, format_number, told
 
 Emphasis = Callable[[str], str]
@@ -59,6 +60,7 @@ def plant_text(comparison: Comparison, units: UnitSystem, columns: int, strong: 
     lines = [heading, paragraph(convention, columns), _plant_table(comparison, units)]
     if any(entry.plant and not entry.plant.is_covered for entry in comparison.entries):
         lines.append(paragraph(f"{OUTSIDE} outside the data of the compressor: carried on beyond them.", columns))
+    lines += [paragraph(text, columns) for text in _capped(comparison, units)]
     lines += [paragraph(absent(comparison, entry), columns) for entry in without]
     return "\n".join(lines)
 
@@ -78,6 +80,20 @@ def _nowhere(comparison: Comparison, without: Sequence[Entry]) -> list[str]:
     reasons = dict.fromkeys(plant_reason(comparison, entry) for entry in without if not entry.is_new_plant)
     new = [absent(comparison, entry) for entry in without if entry.is_new_plant]
     return [*(f"Not computed: {reason}." for reason in reasons), *new]
+
+
+def _capped(comparison: Comparison, units: UnitSystem) -> Iterator[str]:
+    """Yield for which refrigerants the evaporator gives less superheat than is set, if there are any."""
+    kind, unit = "temperature difference", units.label("temperature difference")
+    found = []
+    for entry in comparison.entries:
+        used = capped_superheat_K(comparison.case, entry.plant.full) if entry.plant else None
+        if used is not None:
+            found.append(f"{entry.refrigerant.display_name} {units.text(kind, used)}")
+    if found:
+        wanted = units.text(kind, comparison.case.duty.useful_superheat_K)
+        told = f"Useful superheat below the {wanted} {unit} set, all that the evaporator gives"
+        yield f"{told}: {', '.join(found)} {unit}."
 
 
 def _plant_table(comparison: Comparison, units: UnitSystem) -> str:

@@ -76,7 +76,8 @@ def accounts(
         yearly = counted_alike({name: yearly_cost(case, plan, use[name], pick) for name, plan in plans.items()})
         found = {}
         for name, plan in plans.items():
-            costs = first_cost(case, plan, pick), yearly[name], yearly_saving(yearly[name], yearly[AS_IS])
+            saving = yearly_saving(yearly[name], yearly[AS_IS], use[name].one_sided)
+            costs = first_cost(case, plan, pick), yearly[name], saving
             appraisal = appraise(case, plan, costs, warming[name], warming[AS_IS], pick)
             found[name] = Account(plan, warming[name], *costs, appraisal)
     return Accounts(found.pop(AS_IS), found)

@@ -132,7 +132,7 @@ def _nothing(option: Weighed) -> float | None:
 def _energy(index: int) -> tuple[Measure, ...]:
     def year(option: Weighed) -> float | None:
         electricity = option.use.electricity_J
-        return None if electricity is None else _at(electricity, index)
+        return None if electricity is None or option.use.one_sided else _at(electricity, index)
 
     def plant(option: Weighed) -> float | None:
         installed = option.entry.plant
@@ -159,7 +159,7 @@ def _first_cost(index: int) -> tuple[Measure, ...]:
 def _climate(index: int) -> tuple[Measure, ...]:
     def total(option: Weighed) -> float | None:
         found = option.account.tewi.total_kg
-        return None if found is None else _at(found, index)
+        return None if found is None or option.use.one_sided else _at(found, index)
 
     def indirect(option: Weighed) -> float | None:
         found = option.account.tewi.indirect_kg

@@ -16,7 +16,7 @@ from retrofit.case.model import FIELDS
 from retrofit.equipment.balance import balance
 from retrofit.properties import Fluid
 from retrofit.study.installed import USUAL_SUPERHEAT_SHARE
-from retrofit.study.operating import balanced, delivered_W, operating
+from retrofit.study.operating import balanced, delivered_W, fans_share, operating
 from retrofit.study.performance import at_swept_volume, electric_W, performance
 from retrofit.study.result import FloatArray, Performance
 from retrofit.study.spread import single
@@ -176,8 +176,8 @@ def year_rows(ready: YearPlant, base: YearPlant, year: YearByMap, error: ModelEr
         year: The year.
         error: Factors on what the model says of the refrigerant.
         energy_J: Electricity of the year of the base, every hour balanced; the rows are brought to it. [J]
-    Source: capacity and power at full between the nodes of a map, linear; a machine of variable speed takes at a
-        share of its load the share of that power that it takes with the numbers of the case alone.
+    Source: capacity and power at full between the nodes of a map, linear; a machine of variable speed or in steps
+        takes at a share of its load the share of that power that it takes with the numbers of the case alone.
     """
     axes = _axes(year)
     inlets = tuple(T_K[:, None] + year.shift_K for T_K in (year.cells.T_cond_in_K, year.cells.T_evap_in_K))
@@ -185,12 +185,12 @@ def year_rows(ready: YearPlant, base: YearPlant, year: YearByMap, error: ModelEr
     able, power = able * error.capacity, power * error.capacity / error.cop
     share = np.minimum(year.load_W / able, 1.0)
     unmet = np.where(np.isnan(able), year.load_W, np.maximum(year.load_W - able, 0.0))
-    saved, run_time = _part_load(base, axes, year, share)
+    saved, fans = _part_load(base, axes, year, share)
     settings = year.case.year
     assert settings is not None
     steady = sum(map(or_nothing, (settings.evaporator_fans_W, settings.pumps_W, settings.defrost_power_W)))
     total = electric_W(year.case, np.nan_to_num(power * share * saved))
-    total = total + or_nothing(settings.condenser_fans_W) * np.nan_to_num(run_time, nan=1.0) + steady
+    total = total + or_nothing(settings.condenser_fans_W) * np.nan_to_num(fans, nan=1.0) + steady
     # A row that has no solution at all has no year; single hours without one are hours of unmet load.
     total = np.where(np.all(np.isnan(able), axis=0), np.nan, total)
     energy = np.einsum("c,cr->r", year.cells.hours, total) * HOUR_S
@@ -262,13 +262,13 @@ def _between(axes: tuple[_Axis, _Axis], inlets_K: tuple[FloatArray, ...], values
 def _part_load(
     base: YearPlant, axes: tuple[_Axis, _Axis], year: YearByMap, share: FloatArray
 ) -> tuple[FloatArray | float, FloatArray]:
-    """Return power over that of running part of the time, and run time, at shares of what the plant can.
+    """Return power over that of running part of the time, and the share of fans, at shares of what the plant can.
 
-    A machine that starts and stops takes its full power for that share of the time. For one of variable speed both
-    are solved at some shares with the numbers of the case alone, and interpolated.
+    A machine that starts and stops takes its full power for that share of the time. For one of variable speed or in
+    steps both are solved at some shares with the numbers of the case alone, and interpolated.
     """
     compressor = base.plant.case.compressor
-    if compressor.speed != "variable":
+    if compressor.speed not in ("steps", "variable"):
         return 1.0, share
     nodes = [axis.T_K[:, 0] for axis in axes]
     machine, starts = base.at(nodes[1][None, :, None], nodes[0][:, None, None])
@@ -278,10 +278,11 @@ def _part_load(
     inlets = tuple(
         np.repeat(T_K[:, None], SHARES.size, axis=1) for T_K in (year.cells.T_cond_in_K, year.cells.T_evap_in_K)
     )
-    saved, run_time = (
-        _between(axes, inlets, values) for values in (run.mean_power_W / (full.power_W * SHARES), run.run_time_fraction)
+    saved, fans = (
+        _between(axes, inlets, values)
+        for values in (run.mean_power_W / (full.power_W * SHARES), fans_share(compressor, run))
     )
-    return _at_shares(saved, share), _at_shares(run_time, share)
+    return _at_shares(saved, share), _at_shares(fans, share)
 
 
 def _at_shares(values: FloatArray, share: FloatArray) -> FloatArray:

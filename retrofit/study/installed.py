@@ -224,6 +224,12 @@ def _operation(
     machine, compressor = _with_films(_machine(plant, behaviour), factors), plant.case.compressor
     found = operating(behaviour, machine, compressor, full, plant.needed_W, plant.start_K)
     if np.isnan(found.mean_power_W):
-        raise NoSolutionError(f"{behaviour.designation} in the plant as installed: no solution at part speed")
-    numbers = {item.name: float(getattr(found, item.name)) for item in fields(Operation) if item.name != "control"}
-    return Operation(control=found.control, **numbers)
+        raise NoSolutionError(f"{behaviour.designation} in the plant as installed, at part load: {found.reason}")
+    return Operation(
+        found.control,
+        float(found.cooling_needed_W),
+        float(found.unmet_W),
+        float(found.run_time_fraction),
+        float(found.speed_fraction),
+        float(found.mean_power_W),
+    )

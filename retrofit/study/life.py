@@ -22,6 +22,7 @@ from retrofit.study.draws import (
     year_by_map,
     year_rows,
 )
+from retrofit.study.losses import not_counted
 from retrofit.study.money import Appraisal
 from retrofit.study.plan import Use
 from retrofit.study.result import Comparison, Entry, FloatArray, Installed
@@ -30,6 +31,7 @@ from retrofit.study.states import Family
 from retrofit.study.today import Today, today_of
 from retrofit.study.uncertain import Sample, Uncertain, counted_inputs, physical_inputs, sample
 from retrofit.study.year import (
+    BY_MAKER,
     HOUR_S,
     YearConditions,
     YearPlant,
@@ -219,7 +221,8 @@ def life_of(
             no_year[name] = found
         else:
             years[name] = found
-    uses = {name: Use(year.energy_J, year.peak_W) for name, year in years.items()}
+    years = _beside_today(case, years)
+    uses = {name: year.use for name, year in years.items()}
     base, three = accounts(comparison, uses, base_only), accounts(comparison, uses)
     life = Life(asked, years, no_year, base, three, (), 0, seed, {})
     return life if today is None or draws < 1 else _drawn(comparison, life, ways, draws)
@@ -270,6 +273,15 @@ def _year(case: Case, way: _Way, asked: YearConditions) -> YearRun | str:
         return error.message
 
 
+def _beside_today(case: Case, years: dict[str, YearRun]) -> dict[str, YearRun]:
+    """Return years, those by a maker's seasonal COP with the losses that they count and the plant as it is does not."""
+    today = years.get(case.plant.refrigerant)
+    if today is None:
+        return years
+    lacks = not_counted(case, today.run_time_fraction)
+    return {name: replace(run, one_sided=lacks) if run.machine == BY_MAKER else run for name, run in years.items()}
+
+
 # How sure
 
 
@@ -316,7 +328,7 @@ def _inputs(comparison: Comparison, life: Life) -> Iterator[Uncertain]:
         counted.setdefault(key, spread)
         return base_only(key, spread)
 
-    uses = {name: Use(year.energy_J, year.peak_W) for name, year in life.years.items()}
+    uses = {name: year.use for name, year in life.years.items()}
     accounts(comparison, uses, note)
     yield from counted_inputs(comparison.case, counted)
     for entry in comparison.candidates:
@@ -344,7 +356,7 @@ def _use(today: Today, way: _Way, years: YearByMap, error: ModelError, base: Yea
     """Return the electricity of a year and its peak for every row."""
     if way.plant is None:
         load_J = years.cells.hours @ years.load_W * HOUR_S
-        return Use(load_J / base.seasonal_cop, base.peak_W)
+        return Use(load_J / base.seasonal_cop, base.peak_W, base.one_sided)
     assert today.plant is not None
     ready = replace(way.plant, plant=today.plant)
     found: YearRows = year_rows(ready, way.plant, years, error, base.energy_J)
@@ -369,11 +381,15 @@ def _results(
     }
     if name in uses and today in uses:
         energy, as_is = np.asarray(uses[name].electricity_J), np.asarray(uses[today].electricity_J)
-        found |= {"energy_J": energy, "energy_saving_J": as_is - energy, "energy_ratio": energy / as_is}
+        found["energy_J"] = energy
+        if not uses[name].one_sided:
+            found |= {"energy_saving_J": as_is - energy, "energy_ratio": energy / as_is}
     found |= {"tewi_kg": account.tewi.total_kg, "direct_kg": account.tewi.direct_kg}
     appraisal = account.appraisal
     if appraisal is not None:
         found |= _money(account, appraisal)
+    elif uses.get(name, Use()).one_sided:
+        found["avoided_t"] = None
     elif account.tewi.total_kg is not None and money.as_is.tewi.total_kg is not None:
         found["avoided_t"] = (money.as_is.tewi.total_kg - account.tewi.total_kg) / 1000.0
     return {key: np.asarray(value, dtype=float) for key, value in found.items() if value is not None}

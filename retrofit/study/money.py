@@ -18,6 +18,7 @@ from retrofit.case import Case
 from retrofit.study.emissions import Tewi, leaked_kg_per_year
 from retrofit.study.first_cost import PLANT, FirstCost, charge_keys, levy_per_kg, price_of
 from retrofit.study.law_words import reason_text
+from retrofit.study.losses import Loss, one_sided_words
 from retrofit.study.plan import Plan, Use
 from retrofit.study.spread import FloatArray, Pick, Spread, low_base_high, single
 from retrofit.study.sums import ComparisonState, Missing, Sum, sum_of
@@ -183,6 +184,7 @@ class Saving:
         of_known: The sum of `by_part`; None where the state is unknown. [currency/year]
         excluded: Parts that are known for one of the two alone.
         not_counted: Parts that are known for neither.
+        one_sided: Losses in the option's energy that the plant as it is lacks: the two are not compared.
     """
 
     by_part: Mapping[str, FloatArray]
@@ -190,6 +192,7 @@ class Saving:
     of_known: FloatArray | None
     excluded: tuple[Missing, ...]
     not_counted: tuple[Missing, ...]
+    one_sided: tuple[Loss, ...] = ()
 
     @property
     def total(self) -> FloatArray | None:
@@ -197,25 +200,28 @@ class Saving:
         return self.of_known if self.state is ComparisonState.COMPLETE else None
 
 
-def yearly_saving(option: YearlyCost, as_is: YearlyCost) -> Saving:
+def yearly_saving(option: YearlyCost, as_is: YearlyCost, one_sided: tuple[Loss, ...] = ()) -> Saving:
     """Return what an option saves in a year; a part known for one of the two alone would tilt it and is left out.
 
     Args:
         option: What a year costs with the option.
         as_is: What a year costs with the plant as it is.
+        one_sided: Losses that only the option's energy counts: with any, energy and its peak are not compared.
     """
     by_part: dict[str, FloatArray] = {}
     excluded, not_counted = [], []
     for code in PARTS:
         here, there = option.parts[code], as_is.parts[code]
-        if here is not None and there is not None:
+        if one_sided and code in ("energy", "demand"):
+            excluded.append(Missing(code, (), one_sided_words(one_sided)))
+        elif here is not None and there is not None:
             by_part[code] = np.asarray(there - here)
         elif here is None and there is None:
             not_counted.append(option.missing[code])
         else:
             excluded.append(option.missing[code] if here is None else as_is.missing[code])
     if "energy" not in by_part:
-        return Saving(by_part, ComparisonState.UNKNOWN, None, tuple(excluded), tuple(not_counted))
+        return Saving(by_part, ComparisonState.UNKNOWN, None, tuple(excluded), tuple(not_counted), one_sided)
     state = ComparisonState.INCOMPLETE if excluded else ComparisonState.COMPLETE
     return Saving(by_part, state, np.asarray(sum(by_part.values())), tuple(excluded), tuple(not_counted))
 
@@ -276,7 +282,7 @@ def appraise(
     """
     first, yearly, saving = costs
     avoided = None
-    if option.total_kg is not None and as_is.total_kg is not None:
+    if option.total_kg is not None and as_is.total_kg is not None and not saving.one_sided:
         avoided = np.asarray((as_is.total_kg - option.total_kg) / KG_PER_T)
     excluded = (*first.missing, *saving.excluded)
     state = ComparisonState.INCOMPLETE if excluded else ComparisonState.COMPLETE

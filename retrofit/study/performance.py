@@ -12,6 +12,7 @@ from retrofit.cycle import Cycle, cycle_temperatures
 from retrofit.equipment.compressor import shaft_and_electric
 from retrofit.study.result import FloatArray, Number, Performance
 
+CAPPED_BY_K = 0.05  # below the superheat set: less is rounding of the balance
 FLOWS = (
     "cooling_W",
     "mass_flow_kg_per_s",
@@ -72,6 +73,18 @@ def electric_W(case: Case, power_W: ArrayLike) -> FloatArray:
     """
     efficiency = case.compressor.motor_and_drive
     return np.asarray(power_W, dtype=float) if efficiency is None else shaft_and_electric(power_W, efficiency)[1]
+
+
+def capped_superheat_K(case: Case, found: Performance[float]) -> float | None:
+    """Return the useful superheat of a plant that has settled, where its evaporator gives less than is set; else None.
+
+    Args:
+        case: The case: useful superheat as set, and what the line adds.
+        found: What the plant does.
+    Source: superheat at the compressor inlet, counted from the dew point in the evaporator, less that of the line.
+    """
+    used = float(found.T_suction_K - found.T_evap_dew_K - case.duty.line_superheat_K)
+    return used if used < case.duty.useful_superheat_K - CAPPED_BY_K else None
 
 
 def as_numbers(found: Performance[FloatArray], place: int | tuple[()] = ()) -> Performance[float]:

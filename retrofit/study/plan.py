@@ -11,15 +11,20 @@ from retrofit.refrigerants import Refrigerant
 from retrofit.study.charge import plant_charge
 from retrofit.study.law import LawCheck
 from retrofit.study.leaks import DAYS_PER_YEAR, LeakRate, leak_rate, leak_rate_today
+from retrofit.study.losses import Loss
 from retrofit.study.result import Entry
 from retrofit.study.spread import FloatArray, Spread, single
 
 
 class Use(NamedTuple):
-    """Electricity of a year and its peak, numbers or arrays over draws; None if not known. [J], [W]"""
+    """Electricity of a year and its peak, numbers or arrays over draws; None if not known. [J], [W]
+
+    `one_sided` are losses in it that the year of the plant as it is lacks: with any, the two are not compared.
+    """
 
     electricity_J: FloatArray | float | None = None
     peak_W: FloatArray | float | None = None
+    one_sided: tuple[Loss, ...] = ()
 
 
 @dataclass(frozen=True)

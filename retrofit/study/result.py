@@ -80,8 +80,9 @@ class Operation(Generic[Number]):
         control: "fixed", "steps" or "variable".
         cooling_needed_W: Cooling to deliver; in a year of heating, heat.
         unmet_W: What it lacks of that though it runs all the time.
-        run_time_fraction, speed_fraction: Share of the time it runs, and speed while it runs.
+        run_time_fraction, speed_fraction: Share of the time it runs, and speed, or mean of the steps, while it runs.
         mean_power_W: Compressor power, mean over the time.
+        reason: Why part of the load has no solution; empty where it has one.
     """
 
     control: str
@@ -90,6 +91,7 @@ class Operation(Generic[Number]):
     run_time_fraction: Number
     speed_fraction: Number
     mean_power_W: Number
+    reason: str | NDArray[np.str_] = ""
 
 
 @dataclass(frozen=True)

@@ -15,8 +15,10 @@ from retrofit.equipment.balance import Machine, balance
 from retrofit.errors import NoSolutionError
 from retrofit.properties import Fluid
 from retrofit.study.installed import ExistingPlant, machine_at
-from retrofit.study.operating import balanced, delivered_W, operating
+from retrofit.study.losses import Loss
+from retrofit.study.operating import balanced, delivered_W, fans_share, operating
 from retrofit.study.performance import electric_W
+from retrofit.study.plan import Use
 from retrofit.study.result import FloatArray, Operation, Performance
 
 IntArray = NDArray[np.int64]
@@ -120,6 +122,7 @@ class YearRun:
         monthly_J: Electricity by month, shape (12,); None for bins.
         by_air: The year sorted by outdoor temperature; None for a plant reckoned by its maker's seasonal COP.
         map: Over the temperatures at the inlets; None likewise.
+        one_sided: Of a plant by its maker's seasonal COP, losses in that which the year of the plant as it is lacks.
     """
 
     machine: str
@@ -142,6 +145,12 @@ class YearRun:
     monthly_J: FloatArray | None
     by_air: AirBins | None
     map: PlantMap | None
+    one_sided: tuple[Loss, ...] = ()
+
+    @property
+    def use(self) -> Use:
+        """Return what emissions and money ask of the year."""
+        return Use(self.energy_J, self.peak_W, self.one_sided)
 
 
 # What the year asks
@@ -347,12 +356,11 @@ def run_year(ready: YearPlant, asked: YearConditions) -> YearRun:
     starts = tuple(np.where(found.is_solved, T, start) for T, start in zip(settled, starts, strict=True))  # type: ignore[assignment]
     full, compressor = balanced(found), ready.plant.case.compressor
     if is_variable:
-        run = operating(ready.behaviour, machine, compressor, full, alike[2], starts, asked.serves)
-        full, run = _spread(full, back), _spread(run, back)
+        run = _spread(operating(ready.behaviour, machine, compressor, full, alike[2], starts, asked.serves), back)
     else:
-        full = _spread(full, back)
-        run = operating(ready.behaviour, machine, compressor, full, asked.load_W, starts, asked.serves)
-    return _year_of(ready, asked, full, run, found.reason[back])
+        run = operating(ready.behaviour, machine, compressor, full, asked.load_W, starts, asked.serves, back)
+    reasons = np.where(found.is_solved[back], run.reason, found.reason[back])
+    return _year_of(ready, asked, _spread(full, back), run, reasons)
 
 
 def _from_a_few(
@@ -394,8 +402,9 @@ def _year_of(
     is_solved = ~np.isnan(run.mean_power_W)
     unmet = np.where(is_solved, run.unmet_W, asked.load_W)
     run_time = np.where(is_solved, run.run_time_fraction, 1.0)
+    fans_run = np.where(is_solved, fans_share(case.compressor, run), 1.0)
     power = electric_W(case, np.where(is_solved, run.mean_power_W, 0.0))
-    fans = float(or_nothing(case.year.condenser_fans_W)) * run_time
+    fans = float(or_nothing(case.year.condenser_fans_W)) * fans_run
     steady = float(or_nothing(case.year.evaporator_fans_W) + or_nothing(case.year.pumps_W))
     defrost = float(or_nothing(case.year.defrost_power_W))
     total = power + fans + steady + defrost
@@ -416,13 +425,20 @@ def _year_of(
         compressor_cop=delivered / compressor,
         run_time_fraction=float(np.sum(run_time * hours) / np.sum(hours)),
         not_solved_h=float(np.sum(hours[~is_solved])),
-        reason="; ".join(sorted(set(reasons[~is_solved]) - {""})),
+        reason=_reasons_by_hours(reasons[~is_solved], hours[~is_solved]),
         T_discharge_highest_K=float(np.nanmax(full.T_discharge_K)),
         p_cond_highest_Pa=float(np.nanmax(full.p_cond_Pa)),
         monthly_J=_monthly_J(asked, total),
         by_air=_by_air(asked, total, unmet),
         map=plant_map(ready, asked),
     )
+
+
+def _reasons_by_hours(reasons: NDArray[np.str_], hours: FloatArray) -> str:
+    """Return why hours have no solution, each reason with its hours, the most frequent first."""
+    names, place = np.unique(reasons, return_inverse=True)
+    found = sorted(zip(np.bincount(place, hours, names.size), names, strict=True), key=lambda item: (-item[0], item[1]))
+    return "; ".join(f"{count:.0f} h: {name}" for count, name in found)
 
 
 def _monthly_J(asked: YearConditions, power_W: FloatArray) -> FloatArray | None:

@@ -77,7 +77,7 @@ def test_nan_stays_where_it_is():
         (4e5, 20e5, Settings(line_superheat_K=300.0), "superheat 305 K above the dew point is outside"),
         (4e5, 20e5, Settings(subcooling_K=-1.0), "subcooling"),
         (4e5, 20e5, Settings(subcooling_K=200.0), "subcooling"),
-        (4e5, 20e5, Settings(isentropic_efficiency=0.05), "enthalpy above the dew point"),
+        (4e5, 20e5, Settings(isentropic_efficiency=0.05), "the gas would be hotter than .* degC"),
         (20e5, 4e5, Settings(), "condensing pressure 4 bar is not above the evaporating pressure 20 bar"),
         (4e5, 4e5, Settings(), "nothing to compress"),
         ([4e5, 9e5], [20e5, 8e5], Settings(), "condensing pressure 8 bar is not above the evaporating pressure 9 bar"),

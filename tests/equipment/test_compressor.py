@@ -10,11 +10,9 @@ from scipy.interpolate import PchipInterpolator
 
 from retrofit.cycle import Settings, solve_cycle
 from retrofit.equipment.compressor import (
-    KINDS,
     ROUNDED_SHARE,
     EfficiencyCurve,
     EfficiencyMap,
-    operation,
     shaft_and_electric,
 )
 from retrofit.errors import QuantityError
@@ -277,62 +275,3 @@ def test_an_unknown_place_of_measurement_is_named():
     """Power measured anywhere else than at the shaft or the mains is refused."""
     with pytest.raises(QuantityError, match="'mains' is neither of shaft, electric"):
         shaft_and_electric(1e3, 0.9, "mains")
-
-
-# -- part load ---------------------------------------------------------------------------------------
-
-
-@pytest.mark.parametrize(
-    ("kind", "needed", "run_time", "speed"),
-    [
-        ("fixed", 0.6, 0.6, 1.0),
-        ("steps", 0.6, 1.0, 0.6),  # between the second and third of four steps
-        ("steps", 0.1, 0.4, 0.25),  # below the first step: 0.1 / 0.25 of the time
-        ("variable", 0.6, 1.0, 0.6),
-        ("variable", 0.15, 0.5, 0.3),  # below the lowest speed: 0.15 / 0.3 of the time
-        ("variable", 1.3, 1.0, 1.0),  # too small a machine runs all the time
-        ("fixed", 0.0, 0.0, 1.0),
-        ("fixed", -0.2, 0.0, 1.0),
-    ],
-)
-def test_operation_by_hand(kind, needed, run_time, speed):
-    """Run time and speed of a machine with four steps, or a lowest speed of 30 %, at loads worked by hand."""
-    assert operation(kind, 4, 0.3, needed) == pytest.approx((run_time, speed))
-
-
-@given(
-    st.sampled_from(KINDS),
-    st.integers(1, 12),
-    st.floats(0.05, 1.0),
-    st.lists(st.floats(0.0, 1.5), min_size=1, max_size=20),
-)
-@settings(max_examples=200, deadline=None)
-def test_operation_delivers_what_is_needed(kind, steps, lowest, needed):
-    """Run time times speed is the load, at most full; both lie within their limits, and more load never lowers them."""
-    needed = np.sort(needed)
-    run_time, speed = operation(kind, steps, lowest, needed)
-
-    assert run_time * speed == pytest.approx(np.minimum(needed, 1.0), abs=1e-12)
-    for share in (run_time, speed):
-        assert np.all((share >= 0.0) & (share <= 1.0))
-        assert np.all(np.diff(share) >= -1e-12)
-
-
-def test_operation_keeps_nan():
-    """A load that is not known gives a run time and a speed that are not known."""
-    assert np.isnan(operation("variable", 1, 0.3, np.nan)).all()
-
-
-@pytest.mark.parametrize(
-    ("given_", "message"),
-    [
-        (("two-speed", 1, 0.3), "'two-speed' is none of fixed, steps, variable"),
-        (("steps", 0, 0.3), "0 steps"),
-        (("variable", 1, 0.0), "lowest speed 0 is not above 0"),
-        (("variable", 1, 30.0), "lowest speed 30 is not"),
-    ],
-)
-def test_bad_controls_are_named(given_, message):
-    """A kind of control that is not known, no steps, or an impossible lowest speed is refused with its value."""
-    with pytest.raises(QuantityError, match=message):
-        operation(*given_, 0.5)

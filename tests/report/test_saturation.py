@@ -7,7 +7,7 @@ import jsonschema
 import pytest
 
 from retrofit.errors import QuantityError
-from retrofit.report.saturation import MOST_ROWS, saturation_json, saturation_text, temperature_steps
+from retrofit.report.saturation import MOST_ROWS, air_at, saturation_json, saturation_text, temperature_steps
 from retrofit.study.saturation import saturation_table
 from retrofit.units import IP, SI
 
@@ -135,3 +135,21 @@ def test_text_says_why_a_row_is_empty():
 
     assert "1 of 2 rows outside the model's range: R134a: saturation temperature" in text
     assert numbers(next(line for line in text.split("\n") if line.startswith("−173")))[1:] == [None] * 6
+
+
+def test_gauge_pressures_at_an_altitude_count_from_the_air_there():
+    """Standard atmosphere at 1500 m: 84.56 kPa (ICAO Doc 7488 / ISO 2533, from memory); absolute pressures stay."""
+    table = saturation_table("R134a", [253.15, 303.15])
+    air = air_at("1500 m")
+    lines = saturation_text(table, SI, 80, str, air).split("\n")
+
+    assert air.p_Pa == pytest.approx(84_556.0, abs=10.0)
+    for row, line in zip(table.rows, lines[-2:], strict=True):
+        _, bubble, bubble_gauge, _, dew_gauge, _, _ = numbers(line)
+        assert bubble == pytest.approx(row.p_bubble_Pa / 1e5, abs=0.006)
+        assert bubble_gauge == pytest.approx((row.p_bubble_Pa - 84_556.0) / 1e5, abs=0.006)
+        assert dew_gauge == pytest.approx((row.p_dew_Pa - 84_556.0) / 1e5, abs=0.006)
+    assert "at 1\N{NARROW NO-BREAK SPACE}500 m" in " ".join(lines)
+    assert saturation_json(table, air)["p_ambient_Pa"] == air.p_Pa
+    with pytest.raises(QuantityError):
+        air_at("15 km")

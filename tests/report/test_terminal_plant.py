@@ -2,15 +2,18 @@
 
 import re
 from dataclasses import replace
+from pathlib import Path
 
 import pytest
 
+from retrofit.case import read_case
 from retrofit.checks import assess
 from retrofit.report.terminal import comparison_text
 from retrofit.study import compare
 from retrofit.units import IP, SI
 
 RULE = "───"
+CASES = Path(__file__).resolve().parents[2] / "cases"
 
 
 def block(text, start):
@@ -38,7 +41,7 @@ def test_numbers_of_the_same_plant_are_the_results(assessed):
     *others, new_plant = result.candidates
     assert new_plant.is_new_plant
     for entry in others:
-        evap, cond, discharge, cooling, capacity, cop, runs, lacks = cells(text, entry.refrigerant.display_name)
+        evap, cond, discharge, cooling, capacity, cop, runs, speed, lacks = cells(text, entry.refrigerant.display_name)
 
         assert number(evap) == pytest.approx(entry.plant.full.T_evap_dew_K - 273.15, abs=0.051)
         assert number(cond) == pytest.approx(entry.plant.full.T_cond_dew_K - 273.15, abs=0.051)
@@ -47,6 +50,7 @@ def test_numbers_of_the_same_plant_are_the_results(assessed):
         assert number(capacity) == pytest.approx(100 * (entry.relative["plant_capacity"] - 1), abs=0.051)
         assert number(cop) == pytest.approx(100 * (entry.relative["plant_cop_same_cooling"] - 1), abs=0.051)
         assert number(runs) == pytest.approx(100 * entry.plant.operation.run_time_fraction, abs=0.51)
+        assert number(speed) == pytest.approx(100 * entry.plant.operation.speed_fraction, abs=0.51)
         unmet = entry.plant.operation.unmet_W
         assert lacks == "·" if unmet == 0 else number(lacks) == pytest.approx(unmet / 1e3, abs=0.051)
     assert "COP at the same cooling" in text
@@ -74,9 +78,30 @@ def test_without_exchangers_a_new_plant_is_told_apart(assessed):
 
 
 def test_the_speed_has_a_column_only_where_it_changes(assessed):
-    """The heat pump of variable speed has one, the rack of fixed speed none."""
+    """The heat pump of variable speed has one, and the rack in steps; the trailer of fixed speed has none."""
     assert "Speed" in "\n".join(block(comparison_text(assessed("coast-heat-pump"), SI, 100), "Same plant"))
-    assert "Speed" not in "\n".join(block(comparison_text(assessed("harbour-market"), SI, 100), "Same plant"))
+    assert "Speed" in "\n".join(block(comparison_text(assessed("harbour-market"), SI, 100), "Same plant"))
+    assert "Speed" not in "\n".join(block(comparison_text(assessed("trailer"), SI, 100), "Same plant"))
+
+
+def test_superheat_that_the_evaporator_does_not_give_is_told(tmp_path):
+    """An evaporator hardly loaded: the superheat really used stands below the table, and only for who lacks it.
+
+    By hand: the trailer's evaporator draws air 8 K above evaporating, of which 65 % is the usual most, 5.2 K; with
+    a candidate that evaporates within 6 K of the air, at most 3.9 K of the 5 K set are left.
+    """
+    path = tmp_path / "small.toml"
+    text = (CASES / "trailer.toml").read_text(encoding="utf-8")
+    path.write_text(text.replace('["R452A", "R448A", "R454A"]', '["R452A", "R134a"]'), encoding="utf-8")
+    result = assess(compare(read_case(path)))
+    small = result.candidates[1].plant.full
+    used = small.T_suction_K - 5.0 - small.T_evap_dew_K
+    told = [line for line in comparison_text(result, SI, 100).split("\n") if "Useful superheat" in line]
+
+    assert used == pytest.approx(0.65 * (253.15 - small.T_evap_dew_K), rel=1e-4)
+    assert len(told) == 1
+    assert "below the 5.0 K set" in told[0]
+    assert f"R-134a {used:.1f}" in told[0]
 
 
 def test_inch_pound_units_are_used(assessed):

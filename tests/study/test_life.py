@@ -8,12 +8,15 @@ import numpy as np
 import pytest
 
 from retrofit.checks import assess
+from retrofit.checks.prospects import difference, is_alike, prospects
 from retrofit.properties import fluid
 from retrofit.study import compare
 from retrofit.study.bands import band_of, model_band
 from retrofit.study.draws import ModelError, design_rows, today_rows, year_by_map, year_rows
-from retrofit.study.life import Life, life_of
+from retrofit.study.life import Life, life_of, lived
+from retrofit.study.losses import Loss
 from retrofit.study.spread import single
+from retrofit.study.sums import ComparisonState
 from retrofit.study.today import today_of
 from retrofit.study.uncertain import physical_inputs, sample
 from retrofit.study.year import lowest_condensing_K, run_year, year_conditions, year_plant
@@ -189,6 +192,39 @@ def test_a_new_plant_is_sized_or_reckoned_by_its_maker(rack_of, usual_year, mone
     assert sized.years["R454C"].unmet_J == pytest.approx(sized.years["R404A"].unmet_J, abs=1e-3 * 1e12)
     assert by_maker.years["R454C"].energy_J == pytest.approx(by_maker.asked.load_J / 3.0)
     assert by_maker.certainty["R454C"].quantiles["energy_J"].p10 < by_maker.years["R454C"].energy_J
+
+
+def test_a_makers_figure_is_compared_only_where_both_years_count_the_same_losses(rack_of, usual_year, money):
+    """A maker's seasonal COP counts drive, fans, defrosting, starting and stopping; an ideal year of today does not.
+
+    By hand: the usual year gives no motor efficiency and starts and stops, so energy, warming and money are not set
+    against each other; with a motor and any speed the compressors run all the time, every loss is counted and all is
+    compared. The new plant's own numbers stand either way: load / seasonal COP.
+    """
+    stated = money + '[options.R454C]\nnew_plant = 90000\nseasonal_cop = 3.0\ncharge = "60 kg"\n'
+    motor, any_speed = "motor_efficiency = 0.9\n", 'speed = "variable"\n'
+    found = {
+        keys: assess(compare(rack_of(usual_year, stated, compressor=keys, candidates='"R454C"')))
+        for keys in ("", motor, any_speed, motor + any_speed)
+    }
+    one_sided = {}
+    for keys, result in found.items():
+        options = prospects(lived(result, life_of(result, 20, hourly=False)))
+        change, warming = (difference(options[0], options[1], name) for name in ("energy", "emissions"))
+        one_sided[keys] = change.one_sided
+        is_compared = change.amount is not None
+        assert options[1].year.energy_J == pytest.approx(options[1].year.delivered_J / 3.0)
+        assert is_compared == (not change.one_sided)
+        assert is_compared != change.missing.startswith("not comparable")
+        assert warming.one_sided == change.one_sided
+        assert not is_alike(options[0], options[1], "saving") or is_compared
+        assert (options[1].account.saving.state is not ComparisonState.UNKNOWN) == is_compared
+        assert (options[1].certainty.uses_less is not None) == is_compared
+
+    assert one_sided[""] == (Loss.DRIVE, Loss.CYCLING)
+    assert one_sided[motor] == (Loss.CYCLING,)
+    assert one_sided[any_speed] == (Loss.DRIVE,)
+    assert one_sided[motor + any_speed] == ()
 
 
 def test_single_values_need_no_draws(result):

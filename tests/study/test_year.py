@@ -10,8 +10,10 @@ import pytest
 
 from retrofit.case import Bin, Case, read_case
 from retrofit.case.weather import weather_of_bins
+from retrofit.equipment.balance import balance
 from retrofit.properties import fluid
 from retrofit.study import compare
+from retrofit.study.operating import balanced, delivered_W, operating
 from retrofit.study.today import today_of, with_numbers
 from retrofit.study.year import (
     HOUR_S,
@@ -219,21 +221,150 @@ def test_hours_without_a_solution_count_as_unmet(rack_of):
 
     assert run.not_solved_h == 100
     assert "critical" in run.reason
+    assert run.reason.startswith("100 h: ")
     assert run.unmet_h >= 100
     assert np.isfinite(run.energy_J)
 
 
-def test_a_load_no_speed_balances_is_met_by_starting_and_stopping():
-    """On mild days the shipped heat pump has 3 % of its load, where its evaporator has no difference left at any speed.
+def test_a_small_load_finds_its_speed():
+    """On mild days the shipped heat pump has 3 % of its load, and its machine may run as slowly as it likes.
 
-    It then runs part of the time, as every machine can, and no hour is lost.
+    Its evaporator comes within hundredths of a kelvin of its medium then; no hour is lost, and none falls back to full
+    speed, where the same load takes more.
     """
     case = read_case(CASES / "coast-heat-pump.toml")
-    run = year_of(case, "R454B")
+    run, on_off = year_of(case, "R454B"), year_of(with_control(case, speed="fixed"), "R454B")
 
     assert run.not_solved_h == 0
     assert run.unmet_h == 0
-    assert run.run_time_fraction < 1.0
+    assert run.run_time_fraction == pytest.approx(1.0)
+    assert run.compressor_J < on_off.compressor_J
+
+
+def with_control(case: Case, **keys: object) -> Case:
+    """Return a case whose compressors are controlled otherwise."""
+    return replace(case, compressor=case.compressor.model_copy(update=keys))
+
+
+SLOW = 'speed = "variable"\nlowest_speed = "30 %"'
+FINE = np.linspace(0.02, 1.0, 99)
+
+
+def swept_loads(case: Case, name: str, air_K: float, serves: str = "cooling"):
+    """Return the loads and how the plant of a case meets them, in air of one temperature."""
+    plant = today_of(case, fluid("R404A")).plant
+    ready = year_plant(plant, fluid(name), None)
+    machine, starts = ready.at(np.full(FINE.shape, 275.15), np.full(FINE.shape, air_K))
+    full = balanced(balance(fluid(name), machine, *starts))
+    load = FINE * float(delivered_W(full, serves)[0])
+    return load, full, operating(fluid(name), machine, case.compressor, full, load, starts, serves)
+
+
+@pytest.mark.parametrize("air_K", [283.15, 305.15])
+@pytest.mark.parametrize("name", ["R404A", "R448A", "R454C", "R455A"])
+def test_power_over_load_is_continuous_and_rises_down_to_the_lowest_speed(rack_of, name, air_K):
+    """By physics: less load, less lift, less power a watt; below the lowest speed the machine cycles there.
+
+    By hand below it: power over load is that at the lowest speed, whatever the load. With constant efficiencies.
+    """
+    load, full, run = swept_loads(rack_of(compressor=SLOW), name, air_K)
+    ratio, cycles = run.mean_power_W / load, run.run_time_fraction < 1.0
+
+    assert set(run.reason) == {""}
+    assert np.all(np.diff(run.speed_fraction) >= -1e-9)
+    assert cycles[0]
+    assert not cycles[-1]
+    assert np.all(np.diff(cycles.astype(int)) <= 0)
+    assert ratio[cycles] == pytest.approx(ratio[0], rel=1e-6)
+    assert run.speed_fraction[cycles] == pytest.approx(0.3)
+    assert np.all(np.diff(ratio[~cycles]) > 0.0)
+    # Continuous: no step of 1 % of the load changes it by more than 2 %, at the lowest speed and at full too.
+    assert np.abs(np.diff(ratio) / ratio[1:]).max() < 0.02
+    assert ratio[-1] == pytest.approx(float(full.power_W[0]) / load[-1], rel=1e-5)
+
+
+@pytest.mark.parametrize("name", ["R404A", "R454C"])
+def test_two_steps_at_half_the_swept_volume_are_the_half_machine(rack_of, name):
+    """By hand: a load that one of two steps just carries takes the power of a plant of half the swept volume.
+
+    A load halfway between that and full is met half of the time at each: its power is the mean of the two.
+    """
+    case = rack_of(compressor='speed = "steps"\nsteps = 2')
+    plant = today_of(case, fluid("R404A")).plant
+    ready, half = (year_plant(plant, fluid(name), None, factor) for factor in (1.0, 0.5))
+    (machine, starts), (small, small_starts) = (each.at(275.15, 305.15) for each in (ready, half))
+    full, alone = (balanced(balance(fluid(name), *each)) for each in ((machine, *starts), (small, *small_starts)))
+    between = 0.5 * (full.cooling_W + alone.cooling_W)
+    runs = [
+        operating(fluid(name), machine, case.compressor, full, load, starts)
+        for load in (alone.cooling_W, between, 0.4 * alone.cooling_W)
+    ]
+
+    assert alone.cooling_W > 0.5 * full.cooling_W
+    assert runs[0].mean_power_W == pytest.approx(float(alone.power_W), rel=1e-6)
+    assert (runs[0].run_time_fraction, runs[0].speed_fraction) == (pytest.approx(1.0), pytest.approx(0.5))
+    assert runs[1].mean_power_W == pytest.approx(0.5 * float(full.power_W + alone.power_W), rel=1e-6)
+    assert (runs[1].run_time_fraction, runs[1].speed_fraction) == (pytest.approx(1.0), pytest.approx(0.75))
+    assert runs[2].mean_power_W == pytest.approx(0.4 * float(alone.power_W), rel=1e-6)
+    assert (runs[2].run_time_fraction, runs[2].speed_fraction) == (pytest.approx(0.4), pytest.approx(0.5))
+
+
+def test_a_year_in_steps_lies_between_on_and_off_and_any_speed(rack_of):
+    """Compressors in a hundred steps take what any speed takes; in two and four, between that and on and off."""
+    load = ALWAYS.format(load="60 kW")
+    energy = {
+        steps: year_of(rack_of(load, compressor=f'speed = "steps"\nsteps = {steps}'), "R448A").compressor_J
+        for steps in (2, 4, 100)
+    }
+    on_off, any_speed = (year_of(rack_of(load, compressor=keys), "R448A").compressor_J for keys in ("", SLOW))
+
+    assert any_speed < energy[4] < energy[2] < on_off
+    assert energy[100] == pytest.approx(any_speed, rel=1e-3)
+
+
+def test_fans_stop_with_a_step_that_has_its_own_condenser(rack_of):
+    """By hand: one of two steps, each with half the condenser and its fans, takes half the fans; else all of them blow.
+
+    With half the condenser the step is worse off than with all of it.
+    """
+    year = ALWAYS + 'condenser_fans = "6 kW"\n'
+    steps = 'speed = "steps"\nsteps = 2'
+    half_W = float(balanced_half(rack_of(compressor=steps)))
+    shared, own = (
+        year_of(rack_of(year.format(load=f"{half_W / 1e3:.6f} kW"), compressor=keys), "R404A")
+        for keys in (steps, steps + "\nown_condensers = true")
+    )
+
+    assert shared.condenser_fans_J == pytest.approx(6e3 * 8760 * HOUR_S, rel=1e-4)
+    assert 3e3 * 8760 * HOUR_S < own.condenser_fans_J < 3.3e3 * 8760 * HOUR_S
+    assert own.compressor_J > shared.compressor_J
+
+
+def balanced_half(case: Case) -> float:
+    """Return what a plant of half the swept volume cools on the design day. [W]"""
+    ready = year_plant(today_of(case, fluid("R404A")).plant, fluid("R404A"), None, 0.5)
+    machine, starts = ready.at(275.15, 305.15)
+    return float(balanced(balance(fluid("R404A"), machine, *starts)).cooling_W)
+
+
+def test_hours_alike_in_a_year_of_steps_are_each_hour_by_itself(rack_of):
+    """A year of steps over many loads at few temperatures equals the sum of years of one load each."""
+    loads, steps = (20.0, 55.0, 90.0), 'speed = "steps"\nsteps = 4'
+    case = rack_of('[year]\nbins = [["32 degC", 8760]]\npeak_load = "90 kW"\n', compressor=steps)
+    asked = asked_of(case)
+    many = replace(
+        asked,
+        **{
+            name: np.repeat(getattr(asked, name), 3) for name in ("T_air_K", "T_cond_in_K", "T_evap_in_K", "day_factor")
+        },
+        hours=np.full(3, 2920.0),
+        load_W=np.array(loads) * 1e3,
+    )
+    single = [
+        year_of(case, "R448A", replace(asked, load_W=np.array([load * 1e3]))).compressor_J / 3.0 for load in loads
+    ]
+
+    assert year_of(case, "R448A", many).compressor_J == pytest.approx(sum(single), rel=1e-6)
 
 
 def test_a_new_plant_by_its_maker_takes_load_over_seasonal_cop(rack_of):
