@@ -58,9 +58,9 @@ def plant_text(comparison: Comparison, units: UnitSystem, columns: int, strong: 
         return "\n".join([heading, *(paragraph(text, columns) for text in _nowhere(comparison, without))])
     convention = f"same air, water or brine; to deliver: {cooling_needed_text(comparison, units)}"
     lines = [heading, paragraph(convention, columns), _plant_table(comparison, units)]
+    lines += [paragraph(text, columns) for text in _capped(comparison, units)]
     if any(entry.plant and not entry.plant.is_covered for entry in comparison.entries):
         lines.append(paragraph(f"{OUTSIDE} outside the data of the compressor: carried on beyond them.", columns))
-    lines += [paragraph(text, columns) for text in _capped(comparison, units)]
     lines += [paragraph(absent(comparison, entry), columns) for entry in without]
     return "\n".join(lines)
 

@@ -26,11 +26,21 @@ def not_counted(case: Case, run_time_fraction: float | None) -> tuple[Loss, ...]
         case: The case: a power given, be it zero, counts.
         run_time_fraction: Share of the year that the compressors run; None if not known. [-]
     """
-    assert case.year is not None
+    year = case.year
+    assert year is not None
+    assert case.evaporator is not None
+    assert case.condenser is not None
+    is_air = [exchanger.medium in ("air", None) for exchanger in (case.evaporator, case.condenser)]
+    fans = year.evaporator_fans_W, year.condenser_fans_W
+    # What moves a liquid may be counted as fans of that side too.
+    moved = [
+        given is not None or (not is_gas and year.pumps_W is not None)
+        for is_gas, given in zip(is_air, fans, strict=True)
+    ]
     is_counted = {
         Loss.DRIVE: case.compressor.motor_efficiency is not None,
-        Loss.FANS: case.year.condenser_fans_W is not None and case.year.evaporator_fans_W is not None,
-        Loss.DEFROST: case.year.defrost_power_W is not None,
+        Loss.FANS: all(moved),
+        Loss.DEFROST: not is_air[0] or year.defrost_power_W is not None,
         Loss.CYCLING: run_time_fraction is not None and run_time_fraction >= CYCLES_BELOW,
     }
     return tuple(loss for loss, counted in is_counted.items() if not counted)
@@ -38,7 +48,7 @@ def not_counted(case: Case, run_time_fraction: float | None) -> tuple[Loss, ...]
 
 NAMES = {
     Loss.DRIVE: "motor and drive",
-    Loss.FANS: "fans",
+    Loss.FANS: "fans and pumps",
     Loss.DEFROST: "defrosting",
     Loss.CYCLING: "starting and stopping",
 }
