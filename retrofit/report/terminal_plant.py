@@ -8,7 +8,7 @@ from retrofit.checks.readings import Outcome
 from retrofit.report.agreeing import agreements
 from retrofit.report.found import derived_text
 from retrofit.report.hardware import component_names, verdict_words
-from retrofit.report.plant import cooling_needed_text, has_plant, plant_reason, unmet_text
+from retrofit.report.plant import UA_NOT_MEASURED, cooling_needed_text, has_plant, plant_reason, ua_text, unmet_text
 from retrofit.report.text_table import GAP, Column, paragraph, text_table, width
 from retrofit.study import Comparison, Entry
 from retrofit.study.bands import pair_band
@@ -60,11 +60,25 @@ def plant_text(comparison: Comparison, units: UnitSystem, columns: int, strong: 
     lines = [heading, paragraph(convention, columns), _plant_table(comparison, units)]
     if any(entry.plant and not entry.plant.is_covered for entry in comparison.entries):
         lines.append(paragraph(f"{OUTSIDE} outside the data of the compressor: carried on beyond them.", columns))
+    lines += [paragraph(text, columns) for text in _ua_lines(comparison)]
     lines += [
         paragraph(f"{entry.refrigerant.designation} not computed: {plant_reason(comparison, entry)}.", columns)
         for entry in without
     ]
     return "\n".join(lines)
+
+
+def _ua_lines(comparison: Comparison) -> list[str]:
+    """Return what each candidate does to the conductances, if it is calculated or given for any."""
+    found = [
+        f"{entry.refrigerant.designation} {ua_text(entry.plant.ua_factors[0])} and {ua_text(entry.plant.ua_factors[1])}"
+        for entry in comparison.candidates
+        if entry.plant and any(one.high != 1.0 for one in entry.plant.ua_factors)
+    ]
+    if not found:
+        return []
+    head = f"UA of evaporator and condenser over today's, {UA_NOT_MEASURED}, with 90 % band: "
+    return [f"{head}{'; '.join(found)}."]
 
 
 def _plant_table(comparison: Comparison, units: UnitSystem) -> str:
