@@ -105,6 +105,9 @@ def spans(comparison: Comparison, options: Options, units: UnitSystem) -> Table 
     if not known:
         return None
     groups = _side_by_side(options, known) if len(options.names) > MOST_COLUMNS else _one_by_one(options, known)
+    for option in options.all:
+        if option.entry.is_new_plant and option.entry.plant_reason:
+            options.notes.mark(shown_name(option), f"at the design point: {option.entry.plant_reason}")
     caption = "What 10, 50 and 90 per cent of the draws stay below"
     basis = "Basis: the same draws for every option; design point, existing plant, where no year is named."
     return Table("spans", caption, basis, options.names, groups, options.notes.listed())

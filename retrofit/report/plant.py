@@ -36,7 +36,7 @@ def plant_reason(comparison: Comparison, entry: Entry) -> str:
     if entry.plant is not None:
         return ""
     case, reason = comparison.case, entry.plant_reason or entry.reason or "today's refrigerant is not computed"
-    if entry.plant_reason and (case.evaporator is None or case.condenser is None):
+    if entry.plant_reason and not entry.is_new_plant and (case.evaporator is None or case.condenser is None):
         absent = " and ".join(f"[{name}]" for name in ("evaporator", "condenser") if getattr(case, name) is None)
         return f"the case does not describe the exchangers: give {absent}"
     return reason

@@ -11,6 +11,7 @@ from retrofit.report.catalogue import MARK, MARK_MEANS, class_text, gwp_text
 from retrofit.report.terminal_plant import (
     NEAR,
     Emphasis,
+    absent,
     baseline_text,
     change_cell,
     hardware_text,
@@ -107,7 +108,7 @@ def _tables(comparison: Comparison, units: UnitSystem, columns: int, strong: Emp
         return [refrigerants, *site]
     return [
         _duty(comparison, solved, units, strong),
-        _compressor(comparison, solved, units, strong),
+        _compressor(comparison, solved, units, columns, strong),
         plant_text(comparison, units, columns, strong),
         refrigerants,
         hardware_text(comparison, columns, strong),
@@ -146,7 +147,9 @@ def _duty(comparison: Comparison, solved: Sequence[Entry], units: UnitSystem, st
     return f"{heading}\n{text_table(columns, rows)}"
 
 
-def _compressor(comparison: Comparison, solved: Sequence[Entry], units: UnitSystem, strong: Emphasis) -> str:
+def _compressor(
+    comparison: Comparison, entries: Sequence[Entry], units: UnitSystem, width: int, strong: Emphasis
+) -> str:
     swept = units.with_unit("volume flow", comparison.swept_volume_m3_per_s)
     origin = "" if comparison.swept_volume_from == "case" else "; swept volume not in the case: what today's duty needs"
     heading = strong(f"Same compressor, {swept}: cooling and power follow") + f"\n{convention(comparison)}{origin}"
@@ -162,11 +165,12 @@ def _compressor(comparison: Comparison, solved: Sequence[Entry], units: UnitSyst
         Column("Cooling vs", "today"),
         Column("Power vs", "today"),
     ]
-    solved = [entry for entry in solved if entry.compressor is not None]
+    solved = [entry for entry in entries if entry.compressor is not None]
+    without = [paragraph(absent(comparison, entry), width) for entry in entries if entry.compressor is None]
     cells = [units.column(kind, [getattr(entry.compressor, name) for entry in solved]) for _, kind, name in kinds]
     ratios = [[change_cell(entry, comparison.existing, name) for entry in solved] for name in ("capacity", "power")]
     rows = [list(row) for row in zip(row_names(solved), *cells, *ratios, strict=True)]
-    return f"{heading}\n{text_table(columns, rows)}"
+    return "\n".join([heading, text_table(columns, rows), *without])
 
 
 def _refrigerants(entries: Sequence[Entry], strong: Emphasis) -> str:

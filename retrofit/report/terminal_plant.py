@@ -53,19 +53,32 @@ def plant_text(comparison: Comparison, units: UnitSystem, columns: int, strong: 
     """
     heading = strong("Same plant: existing machine, same media; pressures float")
     without = [entry for entry in comparison.entries if entry.duty is not None and entry.plant is None]
-    reasons = dict.fromkeys(plant_reason(comparison, entry) for entry in without)
     if not has_plant(comparison):
-        return "\n".join([heading, *(paragraph(f"Not computed: {reason}.", columns) for reason in reasons)])
+        return "\n".join([heading, *(paragraph(text, columns) for text in _nowhere(comparison, without))])
     convention = f"same air, water or brine; to deliver: {cooling_needed_text(comparison, units)}"
     lines = [heading, paragraph(convention, columns), _plant_table(comparison, units)]
+    lines += [paragraph(text, columns) for text in _ua_lines(comparison)]
     if any(entry.plant and not entry.plant.is_covered for entry in comparison.entries):
         lines.append(paragraph(f"{OUTSIDE} outside the data of the compressor: carried on beyond them.", columns))
-    lines += [paragraph(text, columns) for text in _ua_lines(comparison)]
-    lines += [
-        paragraph(f"{entry.refrigerant.designation} not computed: {plant_reason(comparison, entry)}.", columns)
-        for entry in without
-    ]
+    lines += [paragraph(absent(comparison, entry), columns) for entry in without]
     return "\n".join(lines)
+
+
+def absent(comparison: Comparison, entry: Entry) -> str:
+    """Return in a sentence that a refrigerant has no numbers on the existing machine, and why.
+
+    Args:
+        comparison: The result.
+        entry: The refrigerant.
+    """
+    return f"{entry.refrigerant.designation} not computed: {plant_reason(comparison, entry)}."
+
+
+def _nowhere(comparison: Comparison, without: Sequence[Entry]) -> list[str]:
+    """Return why nothing is computed on this basis: what the case lacks, and each new plant by its name."""
+    reasons = dict.fromkeys(plant_reason(comparison, entry) for entry in without if not entry.is_new_plant)
+    new = [absent(comparison, entry) for entry in without if entry.is_new_plant]
+    return [*(f"Not computed: {reason}." for reason in reasons), *new]
 
 
 def _ua_lines(comparison: Comparison) -> list[str]:

@@ -52,6 +52,8 @@ NO_UNMET = "In the year computed every hour meets its load."
 OUTCOMES = ("carries", "pays_back")  # 1 where it does, 0 where not: a share and no quantiles
 NO_YEAR = "the case has no [year]"
 MODEL = ("capacity", "cop")
+# What is drawn on the existing machine, and so is not told of a new plant.
+OF_MACHINE = frozenset((*(item.name for item in fields(DesignRows)), "capacity_ratio", "cop_ratio", "carries"))
 SWUNG = ("capacity_ratio", "cop_ratio", "energy_J", "energy_saving_J", "yearly_saving", "npv", "tewi_kg", "avoided_t")
 
 
@@ -90,8 +92,8 @@ class Certainty:
     """How sure the numbers of one refrigerant are.
 
     Attributes:
-        quantiles: By quantity, see `QUANTITIES`.
-        carries: Share of the draws in which it carries the cooling needed.
+        quantiles: By quantity; of a new plant none on the existing machine.
+        carries: Share of the draws in which it carries the cooling needed; None of a new plant.
         uses_less, cheaper, cleaner: Share of the draws in which a year takes less electricity, the remaining life
             costs less, discounted, and it warms less than with the plant as it is; None where that is not known.
         pays_back: Share of the draws in which the simple payback lies within the remaining life.
@@ -291,8 +293,13 @@ def _drawn(comparison: Comparison, life: Life, ways: list[_Way], draws: int) -> 
         if years is not None and name in life.years:
             uses[name] = _use(today, way, years, error, life.years[name])
     money = accounts(comparison, uses, rows.pick)
+    new = {way.entry.refrigerant.designation for way in ways if way.entry.is_new_plant}
     certainty = {
-        name: _certainty(rows, _results(comparison, name, designs, uses, money, money.options[name]))
+        name: _certainty(
+            rows,
+            _results(comparison, name, designs, uses, money, money.options[name]),
+            OF_MACHINE if name in new else frozenset(),
+        )
         for name in designs
     }
     name = comparison.case.plant.refrigerant
@@ -386,10 +393,11 @@ def _money(account: Account, appraisal: Appraisal) -> dict[str, FloatArray | Non
     }
 
 
-def _certainty(rows: Sample, results: Mapping[str, FloatArray]) -> Certainty:
-    """Return quantiles, probabilities and swings of an option's results."""
+def _certainty(rows: Sample, results: Mapping[str, FloatArray], hidden: frozenset[str] = frozenset()) -> Certainty:
+    """Return quantiles, probabilities and swings of an option's results, those hidden left out."""
     full = {key: np.broadcast_to(values, rows.rows) for key, values in results.items()}
     solved = ~np.isnan(full["cooling_W"][rows.drawn])
+    full = {key: values for key, values in full.items() if key not in hidden}
 
     def share(key: str, level: float = 0.0) -> float | None:
         values = full[key][rows.drawn][solved] if key in full else np.array([])

@@ -1,5 +1,6 @@
 """Words of the remaining life: what counts as a difference, what the meter says, what is unknown."""
 
+import re
 from dataclasses import replace
 from pathlib import Path
 
@@ -86,11 +87,23 @@ def test_without_draws_nothing_is_said_of_certainty(result):
     assert "first cost" in costs_words(result, SI)
 
 
-def test_a_gate_is_named_and_not_ranked(result):
-    """The flammable option is in no order, whatever its numbers, and both texts name its gate."""
+def test_a_gate_is_named_and_not_ranked(tmp_path):
+    """As a refrigerant for this plant the flammable one is in no order, whatever its numbers; texts name its gate."""
+    text = re.sub(r"\[options\.R454C\].*?(?=\n\[)", "", CASE.read_text("utf-8"), flags=re.DOTALL)
+    (tmp_path / "without.toml").write_text(text, "utf-8")
+    result = with_life(assess(compare(read_case(tmp_path / "without.toml"))), draws=0)
+    gate = "More hazardous safety class than the plant was designed for"
+
     assert "R454C" not in ranked(result).order.names
-    assert "R454C" in outlook(result, SI).stopped
-    assert any("R454C" in text for text in outlook(result, SI).ranking)
+    assert f"Stopped: R454C ({gate})" in outlook(result, SI).stopped
+    assert any(f"R454C ({gate}" in text for text in outlook(result, SI).ranking if text.startswith("Not ranked"))
+
+
+def test_a_new_plant_is_ranked_with_the_others(result):
+    """Described as a new plant the flammable one is stopped by nothing of this machine, and is in the order."""
+    assert "R454C" in ranked(result).order.names
+    assert outlook(result, SI).stopped == ""
+    assert not any(text.startswith("Not ranked") for text in outlook(result, SI).ranking)
 
 
 @pytest.mark.parametrize(

@@ -13,11 +13,18 @@ ROOT = Path(__file__).resolve().parents[2]
 HOME = "http://127.0.0.1:8000"
 
 
-def case_text(candidates=("R448A", "R454C"), has_year=True):
-    """Return the harbour market's case with a few candidates; without its year a revision is made quickly."""
+def case_text(candidates=("R448A", "R454C"), has_year=True, has_new_plant=False):
+    """Return the harbour market's case with a few candidates; without its year a revision is made quickly.
+
+    Unless a new plant is asked for none is described, so that the flammable candidate is stopped as a conversion.
+    """
     text = (ROOT / "cases" / "harbour-market.toml").read_text(encoding="utf-8")
     for line in ('recommended = "R448A"', 'fallback = "R404A"', "revisions = []"):
         text = re.sub(rf"^{line.split()[0]} = .*$", line, text, flags=re.MULTILINE)
+    if not has_new_plant:
+        table = re.search(r"^\[options\.R454C\].*?(?=^\[)", text, flags=re.MULTILINE | re.DOTALL)[0]
+        keys = r"^(?:new_plant|charge|largest_circuit) = .*\n"
+        text = text.replace(table, re.sub(keys, "", table, flags=re.MULTILINE))
     if not has_year:
         text = re.sub(r"^\[year\].*?(?=^\[emissions\])", "", text, flags=re.MULTILINE | re.DOTALL)
         text = re.sub(r"^year\..*\n", "", text, flags=re.MULTILINE)

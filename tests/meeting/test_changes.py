@@ -5,9 +5,12 @@ import time
 
 import pytest
 
+from retrofit.meeting import session_of
 from retrofit.meeting.board import build_board
 from retrofit.meeting.lineup import HEADLINES, TODAY
 from retrofit.study import Verdict
+from retrofit.units import MISSING
+from tests.meeting.conftest import Client, case_text
 
 
 def field(html, key):
@@ -241,7 +244,7 @@ def test_hide_show_and_pin(client, read):
 
     assert columns == ["R-404A", "R-454C"]
     assert "R-448A" in read(hidden)[1]
-    assert "open" in hidden
+    assert "suitable with modifications" in hidden
     assert pinned == ["R-404A", "R-454C", "R-448A"]
 
 
@@ -433,3 +436,16 @@ def test_the_cautions_scroll_under_what_stays_in_sight(client):
 
     assert 'id="cautions"' in html
     assert "z-index:2147483647" not in html
+
+
+def test_a_new_plant_has_its_verdict_and_no_number_of_the_old_machine(case_file):
+    """Described by the case it is judged as a new plant: no stop of the old one, its cells of the machine empty."""
+    case_file.write_text(case_text(has_year=False, has_new_plant=True), encoding="utf-8")
+    client = Client(session_of(case_file))
+    board = build_board(client.session.moment(), client.session.source, client.app.extensions["meeting"].pictures)
+    player = next(player for player in board.lineup.players if player.designation == "R454C")
+    cells = dict(zip([label for label, _ in board.lineup.headings], player.cells, strict=True))
+
+    assert player.judged.verdict != Verdict.NOT_SUITABLE
+    assert cells["Cooling against today"].text == MISSING
+    assert client.get("/why/R454C").status_code == 200

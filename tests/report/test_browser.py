@@ -18,8 +18,8 @@ SHOWN = ["harbour-market", "freezer-store", "coast-heat-pump"]
 HEADINGS = [
     "Summary", "Options considered, and what is rejected", "Cautions by safety class", "The plant as found",
     "Law: duties, bans and dates", "Comparison on three bases", "Charts", "Hardware, component by component",
-    "Charge against the room", "Method statement and way back", "Assumptions", "Limits: what was not checked",
-    "Sign-off and revisions",
+    "Charge against the room", "Method statement and way back", "Assumptions",
+    "To be found out on site", "Limits: what was not checked", "Sign-off and revisions",
     "Findings and verdict for each refrigerant", "Readings: what could not be derived", "Components, one by one",
     "Charge and room: the working",
     "Law: row by row", "State points, and how to check them by hand", "Job card", "Commissioning sheets",

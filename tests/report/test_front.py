@@ -10,6 +10,7 @@ import pytest
 
 from retrofit.case import Logo, Report, read_case
 from retrofit.checks import assess
+from retrofit.checks.advice import deed
 from retrofit.report import render_html
 from retrofit.report.front import OUTSIDE
 from retrofit.study import compare
@@ -52,16 +53,29 @@ def spelled(text):
     return " ".join(re.sub(r"(?<=[0-9])%", " %", re.sub(r"\bR(?=[0-9])", "R-", text)).split())
 
 
-def test_a_case_without_the_table_names_no_recommendation(market, made_at, read_page):
-    """The engineer has to choose; each candidate that no check stops is named, the stopped one is not among them."""
-    html = render_html(market, made_at=made_at)
+WEIGHED = {
+    "harbour-market": [  # nothing is stopped: the flammable one is a new plant
+        "Keep R-404A", "Convert to R-448A", "Convert to R-449A", "Convert to R-407A", "Convert to R-407H",
+        "Convert to R-452A", "Replace the plant by a new one built for R-454C",
+    ],
+    "process-chiller": ["Keep R-407C", "Convert to R-448A", "Convert to R-449A", "Convert to R-427A"],
+    "coast-heat-pump": ["Keep R-410A", "Replace the plant by a new one built for R-290"],
+}  # fmt: skip
+
+
+@pytest.mark.parametrize(("case", "stopped"), [("harbour-market", 0), ("process-chiller", 3), ("coast-heat-pump", 3)])
+def test_a_case_without_the_table_names_no_recommendation(case, stopped, assessed, made_at, read_page):
+    """The engineer has to choose; each option that no check stops is named, keeping too, the stopped ones are not."""
+    result = assessed(case)
+    result = replace(result, case=replace(result.case, report=None))
+    html = render_html(result, made_at=made_at)
     page = read_page(html)
-    stopped = {e.refrigerant.display_name for e in market.candidates if any(f.level == "stop" for f in e.findings)}
-    names = {entry.refrigerant.display_name for entry in market.candidates}
+    found = [entry for entry in result.entries if any(finding.level == "stop" for finding in entry.findings)]
 
     assert "this tool makes none: the engineer has to choose" in summary(html, read_page)
-    assert {row[0] for row in page.tables["t-weighed"][1:]} == names - stopped
-    assert len(stopped) == 1
+    assert [row[0] for row in page.tables["t-weighed"][1:]] == WEIGHED[case]
+    assert len(WEIGHED[case]) == len(result.entries) - len(found)
+    assert len(found) == stopped
     assert 'class="plate whose"' not in html
 
 
@@ -87,8 +101,9 @@ def test_a_recommendation_carries_every_condition(market, page_with, read_page):
 
 @pytest.mark.parametrize(
     ("case", "name"),
-    [("harbour-market", "R454C"), ("cold-store", "R448A"), ("cold-store", "R22"), ("ice-rink", "R422D")],
-)
+    [("process-chiller", "R454C"), ("cold-store", "R448A"), ("cold-store", "R22"), ("ice-rink", "R422D"),
+     ("freezer-store", "R744")],
+)  # fmt: skip
 def test_what_a_check_stops_is_not_recommended_silently(case, name, assessed, page_with, read_page):
     """Page one says that a check stops it, which one, with its fact, and does not say `provided that`."""
     html, _ = page_with(assessed(case), recommended=name)
@@ -96,17 +111,36 @@ def test_what_a_check_stops_is_not_recommended_silently(case, name, assessed, pa
     entry = next(entry for entry in assessed(case).entries if entry.refrigerant.designation == name)
     stops = [finding for finding in entry.findings if finding.level == "stop"]
 
-    assert "Stop A check stops it." in text
-    assert spelled(told(f"{stops[0].title}: {stops[0].fact}", SI)) in text
+    assert spelled(f"Recommendation {deed(assessed(case), entry)}. Stop ") in text
+    assert spelled(told(f"Stop {stops[0].title}: {stops[0].fact}", SI)) in text
     assert "provided that" not in text
     assert ("more check" in text) == (len(stops) > 1)
 
 
-def test_a_fallback_that_a_check_stops_says_so(market, page_with, read_page):
+def test_a_fallback_that_a_check_stops_says_so(assessed, page_with, read_page):
     """The stop stands under the fallback too."""
-    html, _ = page_with(market, recommended="R449A", fallback="R454C")
+    html, _ = page_with(assessed("process-chiller"), recommended="R449A", fallback="R454C")
+    stop = "Stop More hazardous safety class than the plant was designed for: "
 
-    assert "Replace the plant by a new one built for R-454C. Stop A check stops it." in summary(html, read_page)
+    assert f"Replace the plant by a new one built for R-454C. {stop}" in summary(html, read_page)
+
+
+def test_a_new_plant_that_is_recommended_has_conditions_of_its_own(market, page_with, read_page):
+    """No check stops it: its conditions are that its maker designs it, and what room and class ask, no component."""
+    html, _ = page_with(market, recommended="R454C", fallback="R404A")
+    text = summary(html, read_page)
+    entry = market.candidates[-1]
+    conditions = text[text.index("Conditions ") : text.index(" Numbers, thresholds and sources: ")]
+
+    assert (entry.refrigerant.designation, entry.is_new_plant, entry.hardware) == ("R454C", True, ())
+    told = "Replace the plant by a new one built for R-454C, provided that the conditions below hold."
+    assert f"Recommendation {told}" in text
+    assert "Designed by its maker for its refrigerant and class" in conditions
+    for finding in entry.findings:
+        if finding.level == "work" and finding.code != "new-plant":
+            assert spelled(finding.title) in conditions
+    for words in ("Replaced", "Adjusted or proved", "Work that every conversion needs"):
+        assert words not in conditions
 
 
 def test_the_rejected_are_those_that_a_check_stops(shipped, assessed, page_of, read_page):

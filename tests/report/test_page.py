@@ -159,15 +159,22 @@ def test_values_from_memory_and_disputed_ones_are_marked(page_of, read_page):
     assert "R-448A: kept 1273 (mass-weighted) against 1360" in text
 
 
-def test_a_difference_inside_the_band_has_its_sign_and_one_outside_has_none(page_of, read_page, assessed):
-    """Capacity within ±7 % of today's carries ≈, and beyond it not; the band is that of the design, stated on top."""
-    rows = read_page(page_of("harbour-market", "si")).tables["t-comparison"]
+@pytest.mark.parametrize(("case", "beyond"), [("harbour-market", 0), ("office-chiller", 2)])
+def test_a_difference_inside_the_band_has_its_sign_and_one_outside_has_none(case, beyond, page_of, read_page, assessed):
+    """Capacity within ±7 % of today's carries ≈, and beyond it not; a new plant is another machine and has a dash."""
+    rows = read_page(page_of(case, "si")).tables["t-comparison"]
     row = next(row for row in rows if row[0] == "Cooling against today")
-    changes = [entry.relative["capacity"] - 1.0 for entry in assessed("harbour-market").candidates]
+    candidates = assessed(case).candidates
+    changes = [entry.relative["capacity"] - 1.0 for entry in candidates if not entry.is_new_plant]
 
-    assert any(abs(change) > 0.07 for change in changes)
-    for cell, change in zip(row[3:], changes, strict=True):
-        assert cell.startswith("≈") == (abs(change) <= 0.07)
+    assert sum(abs(change) > 0.07 for change in changes) == beyond
+    assert len(changes) == len(candidates) - 1
+    for cell, entry in zip(row[3:], candidates, strict=True):
+        if entry.is_new_plant:
+            assert "capacity" not in entry.relative
+            assert cell == "–"
+        else:
+            assert cell.startswith("≈") == (abs(entry.relative["capacity"] - 1.0) <= 0.07)
 
 
 @pytest.mark.parametrize("units", SYSTEMS)

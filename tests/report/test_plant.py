@@ -1,4 +1,7 @@
-"""The basis same plant on the page: numbers of the result, reasons where there are none, and what is marked."""
+"""The basis same plant on the page: numbers of the result, reasons where there are none, and what is marked.
+
+The harbour market's last option is a new plant, which is not computed on the existing machine: its cells are dashes.
+"""
 
 import re
 from dataclasses import replace
@@ -7,7 +10,7 @@ import pytest
 
 from retrofit.checks import assess
 from retrofit.report import render_html
-from retrofit.report.plant import WHY_SAME_COOLING
+from retrofit.report.plant import WHY_SAME_COOLING, plant_reason
 from retrofit.study import compare
 from retrofit.study.result import UAFactor
 
@@ -42,6 +45,14 @@ def number(text):
     return float(plain), 0.5 * 10.0 ** -len(plain.partition(".")[2])
 
 
+def on_the_machine(entries):
+    """Return the refrigerants before the last, which is the one new plant."""
+    *others, last = entries
+    assert [last.is_new_plant, last.plant] == [True, None]
+    assert not any(entry.is_new_plant for entry in others)
+    return others
+
+
 @pytest.fixture(scope="module")
 def rows(page_of, read_page):
     """Return the rows of the comparison table of the harbour market from the basis same plant on."""
@@ -56,7 +67,8 @@ def test_the_rows_show_the_numbers_of_the_result(label, unit, rows, assessed):
     row = next(row for row in rows if row[0] == label)
 
     assert row[1] == unit
-    for cell, entry in zip(row[2:], assessed("harbour-market").entries, strict=True):
+    assert row[-1] == "–"
+    for cell, entry in zip(row[2:-1], on_the_machine(assessed("harbour-market").entries), strict=True):
         shown, half = number(cell)
         assert shown == pytest.approx(ROWS[label, unit](entry.plant), abs=1.001 * half)
 
@@ -66,20 +78,28 @@ def test_changes_against_today_carry_the_sign_of_the_band(label, rows, assessed)
     """Changes are the ratios of the result, and those within the band of the model begin with ≈."""
     row, (name, band) = next(row for row in rows if row[0] == label), CHANGES[label]
 
-    assert row[2] == "–"
-    for cell, entry in zip(row[3:], assessed("harbour-market").candidates, strict=True):
+    assert row[2] == row[-1] == "–"
+    for cell, entry in zip(row[3:-1], on_the_machine(assessed("harbour-market").candidates), strict=True):
         assert number(cell)[0] == pytest.approx(100 * (entry.relative[name] - 1), abs=0.501)
         assert cell.startswith("≈") == (abs(entry.relative[name] - 1) <= band)
 
 
-def test_cooling_that_is_lacking_is_told_and_none_where_none_is(rows, assessed):
-    """A refrigerant that runs all the time and lacks cooling says how much, with a note; the others say none."""
-    row = next(row for row in rows if row[0].startswith("Cooling it lacks"))
-    lacking = [entry.plant.operation.unmet_W for entry in assessed("harbour-market").entries]
+@pytest.mark.parametrize(("case", "at_least_W"), [("harbour-market", 1.0), ("office-chiller", 1e3)])
+def test_cooling_that_is_lacking_is_told_and_none_where_none_is(case, at_least_W, assessed, page_of, read_page):
+    """A refrigerant that runs all the time and lacks cooling says how much, the others none, a new plant a dash."""
+    table = read_page(page_of(case, "si")).tables["t-comparison"]
+    row = next(row for row in table if row[0].startswith("Cooling it lacks"))
+    entries = assessed(case).entries
+    lacking = [entry.plant.operation.unmet_W if entry.plant else None for entry in entries]
 
-    assert max(lacking) > 1e3
+    assert [value is None for value in lacking] == [entry.is_new_plant for entry in entries]
+    assert lacking.count(None) == 1
+    assert max(filter(None, lacking)) > at_least_W
     for cell, value in zip(row[2:], lacking, strict=True):
-        assert cell == "none" if value == 0 else number(cell)[0] == pytest.approx(value / 1e3, abs=0.0501)
+        if not value:
+            assert cell == ("–" if value is None else "none")
+        else:
+            assert number(cell)[0] == pytest.approx(value / 1e3, abs=0.0501)
 
 
 def test_why_a_cop_is_compared_at_the_same_cooling_is_told(page_of, read_page):
@@ -113,7 +133,7 @@ def test_a_point_beyond_the_compressor_s_data_is_marked(assessed, made_at, read_
     table = page_with(assessed("harbour-market"), made_at, read_page, is_covered=False)
     row = next(row for row in table if row[0] == "Inside the compressor's data")
 
-    assert row[2:] == ["yes", "no", "yes", "yes", "yes", "yes", "yes"]
+    assert row[2:] == ["yes", "no", "yes", "yes", "yes", "yes", "–"]
 
 
 def test_ua_factors_and_what_they_do_are_told_if_there_are_any(assessed, made_at, read_page):
@@ -144,15 +164,27 @@ def test_without_ua_factors_there_are_no_rows_of_them(assessed, made_at, read_pa
 
 
 def test_a_refrigerant_that_does_not_balance_has_no_numbers_and_its_reason(assessed, made_at, read_page):
-    """One that the plant cannot run with reads as a dash, its reason among the notes; the others keep their numbers."""
+    """One that the plant cannot run with, and a new plant, read as a dash, their reasons among the notes."""
     result = assessed("harbour-market")
     first = replace(result.candidates[0], plant=None, plant_reason="no pressures balance it")
     changed = replace(result, candidates=(first, *result.candidates[1:]))
     page = read_page(render_html(changed, made_at=made_at))
+    text = " ".join(page.text.split())
     row = next(row for row in page.tables["t-comparison"] if row[0] == "Cooling at full")
 
-    assert [cell == "–" for cell in row[2:]] == [False, True, False, False, False, False, False]
-    assert "R-448A: not computed on the basis same plant: no pressures balance it" in " ".join(page.text.split())
+    assert [cell == "–" for cell in row[2:]] == [False, True, False, False, False, False, True]
+    assert "R-448A: not computed on the basis same plant: no pressures balance it" in text
+    assert "R-454C: not computed on the basis same plant: a new plant is sized for the duty" in text
+
+
+def test_a_new_plant_is_not_sent_to_the_tables_of_the_exchangers(assessed, made_at, read_page):
+    """Without [condenser] a conversion lacks that table; a new plant would not be computed with it either."""
+    result = assess(compare(replace(assessed("harbour-market").case, condenser=None, year=None)))
+    reasons = {entry.refrigerant.designation: plant_reason(result, entry) for entry in result.entries}
+
+    assert reasons["R448A"] == "the case does not describe the exchangers: give [condenser]"
+    assert reasons["R454C"] == "a new plant is sized for the duty, and is not computed on the existing machine"
+    assert reasons["R454C"] in " ".join(read_page(render_html(result, made_at=made_at)).text.split())
 
 
 def test_a_plant_of_variable_speed_shows_its_speed(assessed, page_of, read_page):

@@ -2,6 +2,7 @@
 
 import re
 from dataclasses import replace
+from pathlib import Path
 
 import pytest
 
@@ -81,10 +82,15 @@ def test_the_design_point_is_framed_where_a_gauge_reads_it(copies, market):
 
 
 def test_a_pure_refrigerant_has_one_column(case_with, made_at, read_page):
-    """R-134a has no glide and R-513A less than 1 % of pressure: one column, both ends of the cycle framed."""
+    """R-134a has no glide and R-513A less than 1 % of pressure: one column, both ends of the cycle framed.
+
+    A check stops both on this plant, so a reason is asked for, whatever the table would hold.
+    """
     result = assess(compare(case_with("R404A", ("R134a", "R513A"))))
     for name in ("R134a", "R513A"):
-        html = render_site_copy(result, name, made_at=made_at)
+        with pytest.raises(ReportError, match="is stopped, so no job card is written: Less cooling than needed"):
+            render_site_copy(result, name, made_at=made_at)
+        html = render_site_copy(result, name, made_at=made_at, despite="Half the cases are taken out.")
         rows = read_page(html).tables[f"t-pt-{name}-1"]
         (row,) = pressure_rows(name, [number_in_K(rows[1][0], "si")])
 
@@ -95,8 +101,9 @@ def test_a_pure_refrigerant_has_one_column(case_with, made_at, read_page):
 
 def test_a_flammable_refrigerant_asks_for_its_sign(assessed, made_at):
     """The label of a class other than 1 has a line on the warning sign, that of class 1 none."""
+    plant, reason = assessed("process-chiller"), "The plant is rebuilt for the class."
     labels = {
-        name: render_site_copy(assessed("harbour-market"), name, made_at=made_at).split("Text of the label")[1]
+        name: render_site_copy(plant, name, made_at=made_at, despite=reason).split("Text of the label")[1]
         for name in ("R448A", "R454C")
     }
 
@@ -212,14 +219,29 @@ def test_every_part_to_replace_or_to_find_out_is_on_the_card(copies, market, rea
     assert [row.code for row in rows if f"{row.name}: {row.verdict}." not in text] == []
 
 
-def test_a_stop_stands_above_the_first_step(market, made_at):
-    """A card asked for against a stop begins with it."""
-    html = render_site_copy(market, "R454C", made_at=made_at)
+def test_a_stop_stands_above_the_first_step(assessed, made_at, read_page):
+    """A card asked for against a stop gives a reason, and begins with the stop and that reason."""
+    plant = assessed("process-chiller")
+    (entry,) = [entry for entry in plant.candidates if entry.refrigerant.designation == "R454C"]
+    html = render_site_copy(plant, "R454C", made_at=made_at, despite="The plant is rebuilt for the class.")
+    text = " ".join(read_page(html).text.split())
     card = html.split('id="card-R454C"')[1]
-    stops = [item for item in market.candidates[-1].findings if item.level == "stop"]
 
-    assert stops
+    assert [stop.title for stop in entry.stops] == ["More hazardous safety class than the plant was designed for"]
     assert card.index("Nothing begins before this is settled in writing") < card.index('id="t-card-R454C"')
+    assert text.index(f"Stop {entry.stops[0].title}: ") < text.index(
+        "Reason given: The plant is rebuilt for the class."
+    )
+    assert html.index("Reason given: ") < html.index('id="card-R454C"')
+    with pytest.raises(ReportError, match="R-454C is stopped, so no job card is written: More hazardous safety class"):
+        render_site_copy(plant, "R454C", made_at=made_at)
+
+
+def test_a_new_plant_has_no_card_of_ours(market, made_at):
+    """Its maker writes its commissioning, whatever reason is given."""
+    for despite in (None, "We want one."):
+        with pytest.raises(ReportError, match="R-454C would be a new plant, whose maker writes its commissioning"):
+            render_site_copy(market, "R454C", made_at=made_at, despite=despite)
 
 
 def test_the_one_recommended_is_the_only_card(case_with, made_at, read_page):
@@ -232,16 +254,18 @@ def test_the_one_recommended_is_the_only_card(case_with, made_at, read_page):
 
 
 def test_nothing_to_convert_gives_no_card_but_says_why(assessed, page_of, read_page):
-    """Every candidate for the heat pump is stopped: no card, no sheet, and each with its reason."""
+    """Every candidate for the heat pump is stopped or a new plant: no card, no sheet, and each with its reason."""
     page = read_page(page_of("coast-heat-pump", "si"))
 
     assert not [name for name in page.ids if name.startswith(("t-card-", "t-readings-"))]
     assert "None: no candidate has a job card." in page.text
     told = " ".join(page.text.split()).split("No job card: ")[1]
-    assert "stopped by: " in told
-    for entry in assessed("coast-heat-pump").candidates:
+    candidates = assessed("coast-heat-pump").candidates
+    assert [entry.is_new_plant for entry in candidates] == [False, False, False, True]
+    for entry in candidates:
         names, _, rest = told.partition(f"{entry.refrigerant.display_name}, ")
-        assert rest.partition("; ")[0].count("stopped by: ") == 1, names
+        reason = "a new plant: its maker writes its commissioning" if entry.is_new_plant else "stopped by: "
+        assert rest.partition("; ")[0].count(reason) == 1, names
 
 
 HOSTILE = [
@@ -275,7 +299,10 @@ def test_the_site_copy_carries_the_cautions_of_both_refrigerants(market, copies)
 
 def test_own_templates_cannot_take_the_cautions_from_the_site_copy(market, made_at, tmp_path):
     """A template of the reader without the block is refused."""
-    (tmp_path / "commission.html").write_text("<p>{{ page.title }}</p>", encoding="utf-8")
+    shipped = (Path(__file__).parents[2] / "report_templates" / "commission.html").read_text("utf-8")
+    begin, _, own = shipped.partition("<!DOCTYPE html>")
+    assert own.count("{{ cautions }}") == 1
+    (tmp_path / "commission.html").write_text(f"{begin}<!DOCTYPE html>{own.replace('{{ cautions }}', '')}", "utf-8")
 
     with pytest.raises(ReportError, match="cautions"):
         render_site_copy(market, "R448A", template_folder=tmp_path, made_at=made_at)

@@ -255,7 +255,7 @@ def test_the_terminal_has_the_numbers_of_the_result(name, units, to_SI, assessed
     rule = next(i for i, line in enumerate(lines) if line.startswith("───"))
     for line, entry in zip(lines[rule + 1 :], result.entries, strict=False):
         named, expected, span, limit, margin, verdict = re.split(r"\s{2,}", line)
-        assert named.removesuffix(" (today)") == entry.refrigerant.designation
+        assert named.removesuffix(" (today)") == entry.refrigerant.display_name
         assert is_shown(expected, entry.room.expected_kg, to_SI)
         assert is_shown(span.split(" to ")[-1], entry.room.highest_kg, to_SI)
         assert is_shown(limit, entry.room.deciding.limit_kg if entry.room.deciding else None, to_SI)
@@ -263,7 +263,7 @@ def test_the_terminal_has_the_numbers_of_the_result(name, units, to_SI, assessed
         assert verdict == entry.room.verdict
     told = " ".join(" ".join(lines[rule + 1 + len(result.entries) :]).split())
     for entry in result.entries:
-        assert entry.refrigerant.designation in told
+        assert entry.refrigerant.display_name in told
 
 
 def test_the_terminal_keeps_to_its_columns_and_says_nothing_without_a_room(assessed, case_of):

@@ -9,7 +9,8 @@ import pytest
 from retrofit.errors import MissingPartError
 from retrofit.report.machine import comparison_json
 from retrofit.report.spreadsheet import render_spreadsheet, require_spreadsheet
-from retrofit.report.spreadsheet.results import FULL, OPERATION, QUANTITIES, RATIOS
+from retrofit.report.spreadsheet.results import ELECTRIC, FULL, OPERATION, QUANTITIES, RATIO_HEADINGS, RATIOS
+from retrofit.report.spreadsheet.table import GAPS
 from retrofit.units import IP, SI
 
 SHEETS = ["Read me", "Inputs", "Results", "Points", "Year", "Sources"]
@@ -65,15 +66,29 @@ def test_the_first_columns_are_names(book):
 
 @pytest.mark.parametrize("units", [SI, IP], ids=["si", "ip"])
 def test_numbers_are_those_of_the_json(units, assessed, made_at):
-    """Every quantity and ratio of every basis, converted by the unit system and otherwise untouched."""
+    """Every quantity and ratio of every basis, converted by the unit system and otherwise untouched.
+
+    A new plant has no number on the existing machine, and says why.
+    """
     result = comparison_json(assessed("harbour-market"))
     entries = {entry["refrigerant"]: entry for entry in (result["existing"], *result["candidates"])}
     rows = rows_of(opened(render_spreadsheet(assessed("harbour-market"), units.name, made_at=made_at)), "Results")
-    checked = 0
+    checked, bare = 0, []
     for row in rows:
         entry = found = entries[row["Refrigerant"].replace("-", "")]
         for key in WHERE[row["Basis"]]:
-            found = found[key]
+            found = found and found[key]
+        if found is None:
+            bare.append((row["Refrigerant"], row["Basis"]))
+            assert "a new plant is sized for the duty, and is not computed on the existing machine" in row[GAPS]
+            numbers = [*QUANTITIES.values(), *OPERATION.values(), *ELECTRIC.values()]
+            headings = {
+                f"{heading} ({units.label(kind)})" if units.label(kind) else heading for heading, kind in numbers
+            }
+            headings |= {f"{heading}, ratio to today" for heading in RATIO_HEADINGS}
+            assert headings <= set(row)
+            assert not [heading for heading in headings if row[heading] is not None]
+            continue
         for name, (heading, kind) in QUANTITIES.items():
             label = units.label(kind)
             value = row[f"{heading} ({label})" if label else heading]
@@ -83,10 +98,14 @@ def test_numbers_are_those_of_the_json(units, assessed, made_at):
             assert row[f"{heading}, ratio to today"] == pytest.approx(entry["relative"][name], rel=1e-12)
         for name, (heading, kind) in OPERATION.items():
             value = row[f"{heading} ({units.label(kind)})"]
-            there = float(units.number(kind, entry["plant"]["operation"][name]))
-            assert value == (pytest.approx(there, rel=1e-12) if row["Basis"] == FULL else None)
+            if row["Basis"] != FULL:
+                assert value is None
+            else:
+                there = float(units.number(kind, entry["plant"]["operation"][name]))
+                assert value == pytest.approx(there, rel=1e-12)
 
-    assert checked == 7 * 4 * 24  # refrigerants, bases, quantities
+    assert bare == [("R-454C", basis) for basis in list(WHERE)[1:]]  # a new plant has the same duty alone
+    assert checked == (6 * 4 + 1) * 24  # refrigerants, bases, quantities
 
 
 def test_points_are_those_of_the_json(book, assessed):

@@ -174,17 +174,26 @@ def test_values_of_the_draws_are_those_of_the_json(name, book, lived):
     ],
 )  # fmt: skip
 def test_draws_at_the_design_point_stand_beside_its_base(basis, numbers, book, lived):
-    """What 10, 50 and 90 per cent of the draws stay below, for each refrigerant once."""
+    """What 10, 50 and 90 per cent of the draws stay below, for each refrigerant once.
+
+    A new plant, the last option, is not drawn on the existing machine: one row without numbers, with its reason.
+    """
     rows = [bare(row) for row in rows_of(book("harbour-market"), "Results") if row["Basis"] == basis]
     drawn = {(row["Refrigerant"], row["Value"]): row for row in rows if row["Value"] in VALUES}
     told = [o for o in year_json(lived("harbour-market"))["options"] if o["deed"] != "kept, with its repairs"]
 
-    assert len(rows) == len(told) * (1 + len(VALUES))
-    for option in told:
+    *there, new_plant = told
+    (empty,) = [row for row in rows if row["Refrigerant"] == names_of(new_plant)[0]]
+    assert names_of(new_plant) == ("R-454C", "new plant")
+    assert not {name for name, _ in numbers.values()} & set(new_plant["certainty"]["quantiles"])
+    assert [empty[heading] for heading in numbers] == [None] * len(numbers)
+    assert "a new plant is sized for the duty" in empty["Why cells are empty"]
+    assert len(rows) == len(there) * (1 + len(VALUES)) + 1
+    for option in there:
         for value, key in VALUES.items():
             for heading, (name, kind) in numbers.items():
-                there = option["certainty"]["quantiles"][name][key]
-                assert drawn[names_of(option)[0], value][heading] == pytest.approx(shown(there, kind, SI), rel=1e-9)
+                found = option["certainty"]["quantiles"][name][key]
+                assert drawn[names_of(option)[0], value][heading] == pytest.approx(shown(found, kind, SI), rel=1e-9)
 
 
 def test_a_payback_that_never_comes_is_empty_and_said(book, lived):
@@ -261,8 +270,21 @@ def test_the_first_sheet_names_draws_seed_and_what_is_left_out(book, lived):
 
     assert (about["Draws"], about["Seed"]) == (["60"], ["1"])
     assert about["Left out, as in every TEWI"] == list(lived("harbour-market").life.accounts.as_is.tewi.left_out)
-    assert any("A check stops R-454C" in text for text in about["Answer"])
+    assert not any("Stopped: " in text for text in about["Answer"])  # none of its options is
     assert "against the plant as it is" in about["Differences"][0]
+
+
+def test_the_first_sheet_names_what_a_check_stops_and_what_is_not_computed(book, lived):
+    """Each option of the freezer store that a check stops stands there with the first check that does."""
+    rows = [row for row in rows_of(book("freezer-store"), "Read me") if row["Topic"] == "Remaining life"]
+    (told,) = [row["Text"] for row in rows if "Stopped: " in str(row["Text"])]
+    stopped = [entry for entry in lived("freezer-store").candidates if entry.stops]
+
+    assert [entry.refrigerant.designation for entry in stopped] == ["R452A", "R448A", "R407A", "R407F", "R454C", "R744"]
+    for entry in stopped:
+        names, _, reason = told.partition(entry.refrigerant.display_name)[2].partition(" (")
+        assert reason.startswith(f"{entry.stops[0].title})"), names
+    assert "R-744 is not computed, and so not priced or ranked." in told
 
 
 def test_a_currency_is_no_formula_and_the_bytes_stay(lived, made_at):

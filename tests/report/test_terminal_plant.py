@@ -35,7 +35,9 @@ def test_numbers_of_the_same_plant_are_the_results(assessed):
     """Dew points, discharge, cooling, changes, running time and what is lacking, rounded to the digits shown."""
     result = assessed("harbour-market")
     text = comparison_text(result, SI, 100)
-    for entry in result.candidates:
+    *others, new_plant = result.candidates
+    assert new_plant.is_new_plant
+    for entry in others:
         evap, cond, discharge, cooling, capacity, cop, runs, lacks = cells(text, entry.refrigerant.display_name)
 
         assert number(evap) == pytest.approx(entry.plant.full.T_evap_dew_K - 273.15, abs=0.051)
@@ -48,6 +50,27 @@ def test_numbers_of_the_same_plant_are_the_results(assessed):
         unmet = entry.plant.operation.unmet_W
         assert lacks == "·" if unmet == 0 else number(lacks) == pytest.approx(unmet / 1e3, abs=0.051)
     assert "COP at the same cooling" in text
+
+
+REASON = "R-454C not computed: a new plant is sized for the duty, and is not computed on the existing machine."
+
+
+@pytest.mark.parametrize("basis", ["Same compressor", "Same plant"])
+def test_a_new_plant_has_no_row_on_the_existing_machine_and_its_reason(basis, assessed):
+    """Below the rows of the others stands why, and the table of the same duty has it."""
+    text = comparison_text(assessed("harbour-market"), SI, 100)
+
+    assert block(text, basis)[-1] == REASON
+    assert sum(line.startswith("R-454C") for line in block(text, basis)) == 1
+    assert sum(line.startswith("R-454C") for line in block(text, "Same duty")) == 1
+
+
+def test_without_exchangers_a_new_plant_is_told_apart(assessed):
+    """A conversion lacks [condenser]; a new plant would not be computed with it either."""
+    result = assess(compare(replace(assessed("harbour-market").case, condenser=None, year=None)))
+    lines = block(comparison_text(result, SI, 100), "Same plant")
+
+    assert lines[1:] == ["Not computed: the case does not describe the exchangers: give [condenser].", REASON]
 
 
 def test_the_speed_has_a_column_only_where_it_changes(assessed):
@@ -74,7 +97,8 @@ def test_a_point_beyond_the_compressor_s_data_is_marked(assessed):
     lines = block(text, "Same plant")
 
     assert [line.split(" ")[0] for line in lines if "*" in line] == ["R-448A*", "*"]
-    assert "outside the data of the compressor" in lines[-1]
+    assert "outside the data of the compressor" in lines[-2]
+    assert lines[-1] == REASON
 
 
 def test_a_refrigerant_without_the_basis_has_its_reason(assessed):

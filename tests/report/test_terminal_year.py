@@ -57,12 +57,22 @@ def test_numbers_are_those_of_the_json(text, lived):
         assert ("beyond" in c[4]) == (option["money"]["payback_years"] > option["emissions"]["life_years"])
 
 
-def test_what_is_assumed_and_stopped_is_said(text):
-    """The gate of the flammable option, the meter, the seed and the limits assumed stand in words."""
+def test_what_is_stopped_is_said(lived, text):
+    """The gates of the freezer store's options stand in words; the harbour market has none, its last is a new plant."""
+    flat = " ".join(year_text(lived("freezer-store"), SI, 100).split())
+
+    assert "Stopped: R-452A (High pressure ratio); " in flat
+    assert "R-454C (More hazardous safety class than the plant was designed for)" in flat
+    assert "R-744 is not computed, and so not priced or ranked." in flat
+    assert "Not ranked, whatever the weights: R-452A (High pressure ratio); " in flat
+    assert "Stopped: " not in text
+    assert "Not ranked" not in text
+
+
+def test_what_is_assumed_is_said(text):
+    """The meter, the seed and the limits assumed stand in words."""
     flat = " ".join(text.split())
 
-    assert "A check stops R-454C" in flat
-    assert "Not ranked, whatever the weights: R-454C" in flat
     assert "ratio 1.09" in flat
     assert "Calibrated: power 54 kW read" in flat
     assert "with seed 1" in flat

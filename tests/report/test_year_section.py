@@ -131,13 +131,40 @@ def test_first_cost_stands_item_by_item(pages, read_page, told):
             assert number(cell) == pytest.approx(option["money"]["first_cost_currency"][end], abs=0.51)
 
 
+def test_what_a_check_stops_is_that_of_the_json(lived, made_at, read_page):
+    """The freezer store's stops stand on the page as they stand in the JSON."""
+    result = lived("freezer-store")
+    stopped, text = year_json(result)["stopped"], read_page(render_html(result, made_at=made_at)).text
+
+    assert stopped.startswith("Stopped: R452A (High pressure ratio); ")
+    assert " ".join(stopped.split()) in " ".join(text.replace("R-", "R").split())
+
+
+def test_a_new_plant_is_not_drawn_at_the_design_point_of_the_machine(pages, read_page, told):
+    """No cooling, COP or discharge of R-454C on the existing plant stands among the draws, and a note says why."""
+    page = read_page(pages())
+    rows = [row for key, table in page.tables.items() if str(key).startswith("t-spans") for row in table]
+    at_design = next(row for row in rows if row[0] == "R-454C")
+    (option,) = [option for option in told["options"] if option["refrigerant"] == "R454C"]
+
+    assert at_design[1:] == ["–", "–", "–"]
+    assert "R-454C: at the design point: a new plant is sized for the duty" in " ".join(page.text.split())
+    assert option["certainty"]["carries_probability"] is None
+    assert not {"cooling_W", "cop", "T_discharge_K", "capacity_ratio", "cop_ratio"} & set(
+        option["certainty"]["quantiles"]
+    )
+    assert {"energy_J", "tewi_kg", "first_cost_currency"} <= set(option["certainty"]["quantiles"])
+
+
 def test_the_words_are_those_of_the_json(pages, read_page, told):
-    """Meter, strongest inputs and the stop stand on the page; method and left-out parts too; ids stay unique."""
+    """Meter and strongest inputs stand on the page; method and left-out parts too; nothing is stopped; ids unique."""
     page = read_page(pages())
     text = " ".join(page.text.replace("R-", "R").split())
 
-    for words in (told["meter"], told["what_moves_most"], told["stopped"], "JCGM 100:2008, 4.3.7", "blowing agent"):
+    for words in (told["meter"], told["what_moves_most"], "JCGM 100:2008, 4.3.7", "blowing agent"):
         assert " ".join(words.replace("R-", "R").split()) in text
+    assert told["stopped"] is None
+    assert "Stopped: " not in text
     assert set(SECTIONS) <= set(page.ids)
     assert len(page.ids) == len(set(page.ids))
     assert "R449A: first cost" in text  # page one

@@ -720,7 +720,7 @@ ANY_READINGS = st.fixed_dictionaries(
         {},
         optional={
             "swept_volume": st.floats(0.01, 1e6).map(lambda v: f"{v} m3/h"),
-            "motor_efficiency": st.floats(0.01, 1.0),
+            "motor_efficiency": st.floats(0.1, 1.0),  # the least that a case may say
             "heat_loss": st.floats(0.0, 0.9),
         },
     ),

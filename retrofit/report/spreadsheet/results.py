@@ -194,11 +194,13 @@ def _row(comparison: Comparison, entry: Entry, basis: str, found: Performance[fl
 def _gaps(entry: Entry, found: Performance[float] | None, basis: str) -> str:
     """Return why cells of a row are empty, in words."""
     gaps = _common_gaps(entry)
-    if found is None:
-        return "; ".join(
-            [*gaps, entry.reason or (entry.plant_reason or NO_PLANT if "plant" in basis else "not computed")]
-        )
-    return "; ".join([*gaps, NOT_SET])
+    return "; ".join([*gaps, NOT_SET if found is not None else _why_not(entry, basis)])
+
+
+def _why_not(entry: Entry, basis: str) -> str:
+    if entry.is_new_plant or "plant" in basis:
+        return entry.reason or entry.plant_reason or NO_PLANT
+    return entry.reason or "not computed"
 
 
 def _common_gaps(entry: Entry) -> list[str]:
