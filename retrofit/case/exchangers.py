@@ -12,9 +12,7 @@ from retrofit.case.values import Choice, Quantity
 FLOW = Quantity("mass flow", "0 kg/s", "100000 kg/s", "no single plant has more", above_low=True, example="8 kg/s")
 SPECIFIC_HEAT = Quantity("specific heat", "0.5 kJ/(kg K)", "10 kJ/(kg K)", "air, water and brines lie within it")
 INLET = Quantity("temperature", "-100 degC", "150 degC", "air, water and brine lie within it", example="2 degC")
-_CALCULATED = WhyDefault(
-    "from correlations of the refrigerant's side and an estimated share of it; calculated, not measured", beside="inlet"
-)
+_CALCULATED = WhyDefault("from correlations, not measured", beside="inlet")
 _NO_LOSS = WhyDefault("no pressure drop in the exchanger is counted", beside="inlet")
 
 
