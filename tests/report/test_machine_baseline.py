@@ -75,6 +75,8 @@ def test_every_key_of_a_baseline_is_written(bare):
                 "fact": "Fact.",
                 "advice": "Advice.",
                 "source": "source",
+                "missing": (),
+                "decisive": False,
                 "text": "Fact. Advice.",
             }
         ],
