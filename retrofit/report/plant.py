@@ -119,7 +119,7 @@ def _full(comparison: Comparison, units: UnitSystem) -> tuple[Row, ...]:
         change_row("COP at full against today", comparison, "plant_cop", "cop"),
         quantity_row("COP at the same cooling", "ratio", _values(comparison, "same_cooling.cop"), units),
         change_row("COP at the same cooling against today", comparison, "plant_cop_same_cooling", "cop"),
-        *_ua_rows(comparison, units),
+        *_ua_rows(comparison),
     )
 
 
@@ -134,7 +134,7 @@ UA_NOT_MEASURED = "calculated, not measured"
 UA_ORIGINS = {"given": "as the case gives it", "new plant": "new plant, as today's", "unknown": "not known, taken as 1"}
 
 
-def _ua_rows(comparison: Comparison, units: UnitSystem) -> tuple[Row, ...]:
+def _ua_rows(comparison: Comparison) -> tuple[Row, ...]:
     """Return the factors on both conductances, what they rest on, and what they do to the cooling, if any is not 1."""
     plants = [entry.plant for entry in comparison.entries]
     if all(plant is None or all(one.factor == one.high == 1.0 for one in plant.ua_factors) for plant in plants):
@@ -145,9 +145,9 @@ def _ua_rows(comparison: Comparison, units: UnitSystem) -> tuple[Row, ...]:
         rows += [
             Row(f"UA factor of the {name}, {UA_NOT_MEASURED}", "", tuple(Cell(ua_text(one)) for one in both)),
             Row(
-                f"Flow, glide, share of the film: {name}",
+                f"Flow, share of the film: {name}",
                 "",
-                tuple(Cell(_ua_basis(one, units), is_number=False) for one in both),
+                tuple(Cell(_ua_basis(one), is_number=False) for one in both),
             ),
         ]
     effect = [None if p is None else p.full.cooling_W / p.cooling_with_equal_ua_W for p in plants]
@@ -168,14 +168,14 @@ def ua_text(one: UAFactor | None) -> str:
     return f"{one.factor:.2f} ({one.low:.2f} to {one.high:.2f})"
 
 
-def _ua_basis(one: UAFactor | None, units: UnitSystem) -> str:
+def _ua_basis(one: UAFactor | None) -> str:
     if one is None or one.origin == "today":
         return MISSING
-    if one.origin in UA_ORIGINS or one.flow is None or one.glide_K is None or one.share is None:
+    if one.origin in UA_ORIGINS or one.flow is None or one.share is None:
         return UA_ORIGINS[one.origin]
-    glide, kind = units.with_unit("temperature difference", one.glide_K), KINDS[one.kind]
+    kind = KINDS[one.kind]
     low, share, high = (f"{100.0 * value:.0f}" for value in (kind.low, one.share, kind.high))
-    return f"flow × {one.flow:.2f}; {glide}; {share} % ({low} to {high} %)"
+    return f"flow × {one.flow:.2f}; {share} % ({low} to {high} %)"
 
 
 def _run_heading(comparison: Comparison, units: UnitSystem) -> str:

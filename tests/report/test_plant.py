@@ -146,8 +146,8 @@ def test_ua_factors_and_what_they_do_are_told_if_there_are_any(assessed, made_at
 
     assert labels["UA factor of the evaporator, calculated, not measured"][3] == "0.9"
     assert labels["UA factor of the condenser, calculated, not measured"][3] == "0.95 (0.91 to 0.99)"
-    assert labels["Flow, glide, share of the film: evaporator"][3] == "as the case gives it"
-    assert labels["Flow, glide, share of the film: condenser"][3] == "flow × 0.77; 5.0 K; 20 % (10 to 30 %)"
+    assert labels["Flow, share of the film: evaporator"][3] == "as the case gives it"
+    assert labels["Flow, share of the film: condenser"][3] == "flow × 0.77; 20 % (10 to 30 %)"
     assert labels["What the UA factors do to the cooling"][3] == "−5"
 
 
