@@ -14,7 +14,7 @@ from retrofit.case.law import ARRANGEMENTS, EQUIPMENT, Law
 from retrofit.case.logo import Logo
 from retrofit.case.model import Case, Default
 from retrofit.case.money import Items, Money, Option, Options, Range
-from retrofit.case.numbers import EfficiencyPoint, FilmFactors
+from retrofit.case.numbers import EfficiencyPoint, UAFactors
 from retrofit.case.paper import Report, Revision
 from retrofit.case.pipework import FIXED, GasLine, Lines, LiquidLine, Receiver, Valve
 from retrofit.case.plant import Compare, Duty, Plant
@@ -52,7 +52,6 @@ __all__ = [
     "Emissions",
     "Evaporator",
     "Exchanger",
-    "FilmFactors",
     "GasLine",
     "GridYear",
     "Items",
@@ -77,6 +76,7 @@ __all__ = [
     "Threshold",
     "Thresholds",
     "TopUp",
+    "UAFactors",
     "Valve",
     "Year",
     "areas",

@@ -13,6 +13,8 @@ from retrofit.case.thresholds import Threshold
 from retrofit.case.values import FileValue
 from retrofit.units import close_to, described, listed, quoted, shown
 
+RENAMED = {"film_factor": "ua_factor"}
+
 
 def complaint(detail: ErrorDetails) -> str:
     """Return what is wrong, what is allowed and what to do about it.
@@ -80,6 +82,8 @@ def _unknown_key(where: KeyPath, value: object) -> str:
     home = _home(key, value)
     if home and home != place:
         return f"{key} belongs {home}, not {place}; move it there"
+    if key in RENAMED and RENAMED[key] in known:
+        return f"{key} is called {RENAMED[key]} now; write {RENAMED[key]} {place}"
     thing = "table" if isinstance(value, dict) else "key"
     return f"there is no {thing} {quoted(key)} {place}{close_to(key, known)}; known are {listed(known, 'and')}"
 

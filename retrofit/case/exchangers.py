@@ -5,14 +5,14 @@ from __future__ import annotations
 from dataclasses import dataclass, replace
 from typing import Annotated
 
-from retrofit.case.numbers import FilmFactors, FilmFactorValue
+from retrofit.case.numbers import UAFactors, UAFactorValue
 from retrofit.case.table import Table, WhyDefault, key
 from retrofit.case.values import Choice, Quantity
 
 FLOW = Quantity("mass flow", "0 kg/s", "100000 kg/s", "no single plant has more", above_low=True, example="8 kg/s")
 SPECIFIC_HEAT = Quantity("specific heat", "0.5 kJ/(kg K)", "10 kJ/(kg K)", "air, water and brines lie within it")
 INLET = Quantity("temperature", "-100 degC", "150 degC", "air, water and brine lie within it", example="2 degC")
-_AS_TODAY = WhyDefault("the exchanger is taken as good with every refrigerant as with today's", beside="inlet")
+_CALCULATED = WhyDefault("from correlations, not measured", beside="inlet")
 _NO_LOSS = WhyDefault("no pressure drop in the exchanger is counted", beside="inlet")
 
 
@@ -63,8 +63,10 @@ class Exchanger(Table):
         None,
         where="drawings: crossflow for finned coils, counterflow for plates",
     )
-    film_factor: Annotated[FilmFactors, FilmFactorValue(), _AS_TODAY] = key(
-        "film_factor", "Overall conductance with a candidate over today's: a number, or one for each.", 1.0
+    ua_factor: Annotated[UAFactors, UAFactorValue(), _CALCULATED] = key(
+        "ua_factor",
+        "Overall conductance (UA) with a candidate over today's: a number, or one for each; else calculated.",
+        "calculated",
     )
     pressure_drop_K: Annotated[
         float, Quantity("temperature difference", "0 K", "20 K", "more points to a blocked exchanger"), _NO_LOSS

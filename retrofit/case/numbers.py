@@ -137,43 +137,46 @@ class PointValue(FileValue):
 
 
 @dataclass(frozen=True)
-class FilmFactors:
+class UAFactors:
     """Overall conductance of an exchanger with a refrigerant, over that with today's.
 
     Attributes:
-        others: The factor of every refrigerant that `by_refrigerant` does not name. [-]
+        others: The factor of every refrigerant that `by_refrigerant` does not name; None if it is calculated. [-]
         by_refrigerant: Factor by designation. [-]
     """
 
-    others: float = 1.0
+    others: float | None = None
     by_refrigerant: tuple[tuple[str, float], ...] = ()
 
-    def of(self, refrigerant: str) -> float:
-        """Return the factor of a refrigerant, by its designation. [-]"""
+    def of(self, refrigerant: str) -> float | None:
+        """Return the factor of a refrigerant, by its designation; None if it is calculated. [-]"""
         return dict(self.by_refrigerant).get(refrigerant, self.others)
 
 
 @dataclass(frozen=True)
-class FilmFactorValue(FileValue):
-    """A number for every candidate, or a table of designation and number."""
+class UAFactorValue(FileValue):
+    """A number for every candidate, a table of designation and number, or "calculated"."""
 
     factor = Number(0.1, 10.0, "an exchanger does not change more than tenfold")
+    word = "calculated"
 
     def sample(self) -> str:
         """Return a factor, as text."""
         return "1.0"
 
-    def read(self, value: object, p_ambient_Pa: float | None = None) -> FilmFactors:
+    def read(self, value: object, p_ambient_Pa: float | None = None) -> UAFactors:
         """Return the factors."""
+        if value == self.word:
+            return UAFactors()
         if not isinstance(value, Mapping):
-            return FilmFactors(self.factor.read(value))
+            return UAFactors(self.factor.read(value))
         found: dict[str, float] = {}
         for name, factor in value.items():
             designation = designation_of(name)
             if designation in found:
                 raise QuantityError(f"{with_hyphens(designation)} is in the table twice; leave one out")
             found[designation] = self._of_one(name, factor)
-        return FilmFactors(by_refrigerant=tuple(found.items()))
+        return UAFactors(by_refrigerant=tuple(found.items()))
 
     def _of_one(self, name: str, factor: object) -> float:
         try:
@@ -182,9 +185,9 @@ class FilmFactorValue(FileValue):
             raise QuantityError(f"{quoted(name)}: {error}") from None
 
     def json_schema(self) -> dict[str, Any]:
-        """Return a number, or a table of numbers."""
+        """Return a number, a table of numbers, or the word."""
         number = self.factor.json_schema()
-        return {"anyOf": [number, {"type": "object", "additionalProperties": number}]}
+        return {"anyOf": [number, {"type": "object", "additionalProperties": number}, {"const": self.word}]}
 
 
 def _number(value: object, thing: str, example: str) -> float:

@@ -142,11 +142,11 @@ def _defaults(model: CaseFile) -> Iterator[Default]:
         if table is not None:
             yield from _defaults_of(name, table)
     for way, exchanger in (("evaporator", model.evaporator), ("condenser", model.condenser)):
-        factors = exchanger.film_factor.by_refrigerant if exchanger else ()
+        factors = exchanger.ua_factor.by_refrigerant if exchanger else ()
         others = [name for name in model.compare.candidates if name not in dict(factors)]
         if factors and others:
-            why = "the exchanger is taken as good as with today's refrigerant"
-            yield Default(f"{way}.film_factor", f"1.0 for {listed(others, 'and')}", why)
+            why = "not in the table of the case; calculated, not measured"
+            yield Default(f"{way}.ua_factor", f"calculated for {listed(others, 'and')}", why)
     if model.money is not None and "new_plant_life_years" not in model.money.model_fields_set:
         yield from _plant_life(model)
 

@@ -91,7 +91,7 @@ match = "mean"                   # refrigerants are compared at equal mean (or d
 #| flow = "8 kg/s"               # or the flow instead of the outlet,
 #| specific_heat = "1.006 kJ/(kg K)"   # with its specific heat
 # arrangement = "crossflow"      # counterflow, crossflow, or flooded (the refrigerant has one temperature)
-# film_factor = 1.0              # conductance with a candidate over today's; or one for each: {{R448A = 0.97}}
+# ua_factor = "calculated"       # conductance with a candidate over today's; or a number, or {{R448A = 0.97}}
 # pressure_drop = "1 K"          # as a fall of the saturation temperature
 
 # [condenser]                    # what it warms, at the duty above; keys as for the evaporator
@@ -102,7 +102,7 @@ match = "mean"                   # refrigerants are compared at equal mean (or d
 #| specific_heat = "1.006 kJ/(kg K)"
 # arrangement = "crossflow"
 # highest_inlet = "38 degC"      # while the plant runs; of water or brine nothing else says it
-# film_factor = 1.0
+# ua_factor = "calculated"
 # pressure_drop = "0.5 K"
 
 # [readings]                     # what was measured on the running plant

@@ -41,7 +41,7 @@ def build_fluid(mixture: Mixture) -> Fluid:
         far, near = largest_errors(model, span, fluid)
         if far <= LARGEST_ERROR and near <= LARGEST_ERROR_NEAR_CRITICAL:
             numbers = replace(tables.numbers, largest_error=far)
-            gaps = viscosity_gaps(Components(mixture), span.T_highest_K, _has_viscosity_throughout(tables))
+            gaps = viscosity_gaps(Components(mixture), _has_viscosity_throughout(tables))
             return replace(fluid, tables=replace(tables, numbers=numbers), viscosity_gaps=gaps)
     raise ModelFaultError(
         f"{mixture.designation}: its tables differ from its equations by {far:.1e} ({near:.1e} near the critical "

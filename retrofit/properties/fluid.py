@@ -286,7 +286,7 @@ class Fluid:
             nan,
         )
 
-    # -- viscosity -------------------------------------------------------------------------------
+    # -- transport -------------------------------------------------------------------------------
 
     def viscosity_liquid(self, p_Pa: ArrayLike) -> FloatArray:
         """Return the dynamic viscosity of saturated liquid. [Pa s]
@@ -298,8 +298,40 @@ class Fluid:
         Returns: Viscosity; NaN where it is unknown, see `viscosity_gaps`. [Pa s]
         Raises: OutsideValidRangeError outside the range of the bubble line.
         """
-        ln_p = np.log(self._pressure_inside(p_Pa, self.tables.bubble.x, "bubble pressure"))
-        table = self.tables.liquid_viscosity
+        return self._along(p_Pa, self.tables.liquid_viscosity, self.tables.bubble, "bubble pressure")
+
+    def conductivity_liquid(self, p_Pa: ArrayLike) -> FloatArray:
+        """Return the thermal conductivity of saturated liquid. [W/(m K)]
+
+        Args:
+            p_Pa: Bubble pressure. [Pa]
+        Returns: Conductivity; NaN where it is unknown. [W/(m K)]
+        Raises: OutsideValidRangeError outside the range of the bubble line.
+        """
+        return self._along(p_Pa, self.tables.liquid_conductivity, self.tables.bubble, "bubble pressure")
+
+    def conductivity_vapour(self, p_Pa: ArrayLike) -> FloatArray:
+        """Return the thermal conductivity of saturated vapour. [W/(m K)]
+
+        Args:
+            p_Pa: Dew pressure. [Pa]
+        Returns: Conductivity; NaN where it is unknown. [W/(m K)]
+        Raises: OutsideValidRangeError outside the range of the dew line.
+        """
+        return self._along(p_Pa, self.tables.vapour_conductivity, self.tables.dew, "dew pressure")
+
+    def surface_tension(self, p_Pa: ArrayLike) -> FloatArray:
+        """Return the surface tension. [N/m]
+
+        Args:
+            p_Pa: Bubble pressure. [Pa]
+        Returns: Surface tension; NaN where it is unknown. [N/m]
+        Raises: OutsideValidRangeError outside the range of the bubble line.
+        """
+        return self._along(p_Pa, self.tables.surface_tension, self.tables.bubble, "bubble pressure")
+
+    def _along(self, p_Pa: ArrayLike, table: Curve, line: Curve, what: str) -> FloatArray:
+        ln_p = np.log(self._pressure_inside(p_Pa, line.x, what))
         return np.where(_is_on(table.x, ln_p), np.exp(table(ln_p, 0)[0]), np.nan)
 
     def viscosity_vapour(self, p_Pa: ArrayLike, T_K: ArrayLike) -> FloatArray:

@@ -27,7 +27,7 @@ from retrofit.properties.components import Mixture
 from retrofit.properties.fluid import Fluid
 from retrofit.properties.table import Tables
 
-FORMAT = 4  # raise it when anything about the tables or how they are made changes
+FORMAT = 5  # raise it when anything about the tables or how they are made changes
 MAGIC = b"retrofit tables\n"
 FOLDER_VARIABLE = "RETROFIT_STORE"
 STALE_SECONDS = 3600.0

@@ -3,8 +3,8 @@
 Saturation curves run along ln p. The vapour surface runs over ln p and the superheat; two more turn it
 round, so that a cycle needs no iteration: enthalpy from entropy, and temperature from enthalpy. Two-phase
 states are held as their small departure from a straight line between the saturated states, which is zero
-for a pure fluid. Liquid runs over ln p and the share of the greatest subcooling. Viscosity has a curve and
-a surface of its own, over the pressures where it is known.
+for a pure fluid. Liquid runs over ln p and the share of the greatest subcooling. Viscosity, conductivity and surface
+tension have curves of their own, and the viscosity of vapour a surface, over the pressures where they are known.
 """
 
 from __future__ import annotations
@@ -18,7 +18,7 @@ from retrofit.errors import ModelFaultError
 from retrofit.properties.equation import EquationModel, Equilibrium, PhaseState
 from retrofit.properties.grid import Curve, FloatArray, Surface
 from retrofit.properties.range import SaturationSpan
-from retrofit.properties.transport import Components, liquid_viscosity, vapour_viscosity
+from retrofit.properties.transport import Components, liquid_curves, vapour_conductivity, vapour_viscosity
 from retrofit.properties.two_phase import walk_qualities
 
 LARGEST_SUBCOOLING_K = 80.0
@@ -54,7 +54,9 @@ class Tables:
         two_phase: departures of T, s, v, mass and molar quality from the straight line, over ln p and share of h.
         liquid: h, s, ln rho against the bubble point, over ln p and share of the greatest subcooling.
         liquid_viscosity: ln viscosity of saturated liquid, along ln p.
+        liquid_conductivity, surface_tension: ln of these of saturated liquid, along ln p.
         vapour_viscosity: ln viscosity of vapour, over ln p and superheat.
+        vapour_conductivity: ln conductivity of saturated vapour, along ln p.
         numbers: Limits and constants.
     """
 
@@ -67,7 +69,10 @@ class Tables:
     two_phase: Surface
     liquid: Surface
     liquid_viscosity: Curve
+    liquid_conductivity: Curve
+    surface_tension: Curve
     vapour_viscosity: Surface
+    vapour_conductivity: Curve
     numbers: Numbers
 
     def arrays(self) -> dict[str, FloatArray]:
@@ -99,7 +104,10 @@ class Tables:
             two_phase=surface("two_phase"),
             liquid=surface("liquid"),
             liquid_viscosity=curve("liquid_viscosity"),
+            liquid_conductivity=curve("liquid_conductivity"),
+            surface_tension=curve("surface_tension"),
             vapour_viscosity=surface("vapour_viscosity"),
+            vapour_conductivity=curve("vapour_conductivity"),
             numbers=Numbers(*map(float, arrays["numbers"])),
         )
 
@@ -122,6 +130,7 @@ def build_tables(model: EquationModel, span: SaturationSpan, fineness: float = 1
     heated = _vapour_nodes(model, dew, _graded(numbers.superheat_highest_K, round(48 * fineness), 2.0))
     components = Components(model.mixture)
     rho = np.exp(heated.ln_rho + dew_curve.nodes[3, 0][:, None]) / model.molar_mass_kg_per_mol
+    viscosity, conductivity, tension = liquid_curves(components, bubble_curve.x, temperatures)
     return Tables(
         pressure=Curve.through(temperatures, np.log([[point.p_Pa for point in line] for line in (bubble, dew)])),
         bubble=bubble_curve,
@@ -131,8 +140,11 @@ def build_tables(model: EquationModel, span: SaturationSpan, fineness: float = 1
         by_enthalpy=_by_enthalpy(dew_curve.x, heated),
         two_phase=_two_phase(model, bubble, dew_curve, round(18 * fineness)),
         liquid=_liquid(model, bubble, span.T_lowest_K, round(28 * fineness)),
-        liquid_viscosity=liquid_viscosity(components, bubble_curve.x, temperatures),
+        liquid_viscosity=viscosity,
+        liquid_conductivity=conductivity,
+        surface_tension=tension,
         vapour_viscosity=vapour_viscosity(components, dew_curve.x, heated.superheat, heated.T, rho),
+        vapour_conductivity=vapour_conductivity(components, dew_curve.x, temperatures, rho[:, 0]),
         numbers=numbers,
     )
 

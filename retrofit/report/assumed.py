@@ -22,7 +22,7 @@ _MACHINE = (
     "compressor.heat_loss",
 )
 _DRIVE = ("compressor.motor_efficiency", "compressor.drive_efficiency")  # from readings, or not there
-_EXCHANGERS = tuple(f"{way}.{key}" for way in ("evaporator", "condenser") for key in ("film_factor", "pressure_drop"))
+_EXCHANGERS = tuple(f"{way}.{key}" for way in ("evaporator", "condenser") for key in ("ua_factor", "pressure_drop"))
 _PLANT = (*_EFFECTS, *_MACHINE, *_EXCHANGERS, "evaporator.specific_heat", "condenser.specific_heat")
 _ALL = (*_PLANT, *_DRIVE, "year", "emissions", "options")
 _LIFE = (*_ALL, "money")

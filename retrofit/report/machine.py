@@ -172,8 +172,10 @@ def _plant(found: Installed | None) -> dict[str, Any] | None:
         "operation": asdict(found.operation) | {"mean_electric_W": found.mean_electric_W},
         "electric_W": found.electric_W,
         "is_covered": found.is_covered,
-        "film_factors": list(found.film_factors),
-        "cooling_with_equal_films_W": found.cooling_with_equal_films_W,
+        "ua_factors": {
+            way: asdict(one) for way, one in zip(("evaporator", "condenser"), found.ua_factors, strict=True)
+        },
+        "cooling_with_equal_ua_W": found.cooling_with_equal_ua_W,
         "conductances_W_per_K": list(found.conductances_W_per_K),
         "reason": None,
     }

@@ -4,11 +4,13 @@ from __future__ import annotations
 
 from operator import attrgetter
 
+from retrofit.equipment.heat_transfer import KINDS
 from retrofit.report.rows import change_row, change_text, near, quantity_row
 from retrofit.report.table import Cell, Group, Notes, Row
 from retrofit.study import Comparison, Entry
 from retrofit.study.bands import pair_band
 from retrofit.study.performance import capped_superheat_K
+from retrofit.study.result import UAFactor
 from retrofit.units import MISSING, UnitSystem, stacked
 
 HELD = "existing compressor and exchangers, same air, water or brine; pressures float"
@@ -134,7 +136,7 @@ def _full(comparison: Comparison, units: UnitSystem) -> tuple[Row, ...]:
         change_row("COP at full against today", comparison, "plant_cop", "cop"),
         quantity_row("COP at the same cooling", "ratio", _values(comparison, "same_cooling.cop"), units),
         change_row("COP at the same cooling against today", comparison, "plant_cop_same_cooling", "cop"),
-        *_film_rows(comparison),
+        *_ua_rows(comparison),
     )
 
 
@@ -145,22 +147,52 @@ def _electric_rows(comparison: Comparison, units: UnitSystem, label: str, name: 
     return (quantity_row(label, "power", _values(comparison, name), units),)
 
 
-def _film_rows(comparison: Comparison) -> tuple[Row, ...]:
-    """Return the film factors of the case and what they do to the cooling, if any is not 1."""
+UA_NOT_MEASURED = "calculated, not measured"
+UA_ORIGINS = {"given": "as the case gives it", "new plant": "new plant, as today's", "unknown": "not known, taken as 1"}
+
+
+def _ua_rows(comparison: Comparison) -> tuple[Row, ...]:
+    """Return the factors on both conductances, what they rest on, and what they do to the cooling, if any is not 1."""
     plants = [entry.plant for entry in comparison.entries]
-    if all(plant is None or plant.film_factors == (1.0, 1.0) for plant in plants):
+    if all(plant is None or all(one.factor == one.high == 1.0 for one in plant.ua_factors) for plant in plants):
         return ()
-    factors = [
-        Row(
-            f"Film factor of the {name}",
-            "",
-            tuple(Cell(MISSING if p is None else f"{p.film_factors[i]:g}") for p in plants),
-        )
-        for i, name in enumerate(("evaporator", "condenser"))
-    ]
-    effect = [None if p is None else p.full.cooling_W / p.cooling_with_equal_films_W for p in plants]
+    rows = []
+    for i, name in enumerate(("evaporator", "condenser")):
+        both = [None if plant is None else plant.ua_factors[i] for plant in plants]
+        rows += [
+            Row(f"UA factor of the {name}, {UA_NOT_MEASURED}", "", tuple(Cell(ua_text(one)) for one in both)),
+            Row(
+                f"Flow, share of the film: {name}",
+                "",
+                tuple(Cell(_ua_basis(one), is_number=False) for one in both),
+            ),
+        ]
+    effect = [None if p is None else p.full.cooling_W / p.cooling_with_equal_ua_W for p in plants]
     cells = tuple(Cell(change_text(value, 0.0)) for value in effect)
-    return (*factors, Row("What the film factors do to the cooling", "%", cells))
+    return (*rows, Row("What the UA factors do to the cooling", "%", cells))
+
+
+def ua_text(one: UAFactor | None) -> str:
+    """Return a factor on a conductance with its band, as text.
+
+    Args:
+        one: The factor; None where the refrigerant has none.
+    """
+    if one is None:
+        return MISSING
+    if one.low == one.high:
+        return f"{one.factor:g}"
+    return f"{one.factor:.2f} ({one.low:.2f} to {one.high:.2f})"
+
+
+def _ua_basis(one: UAFactor | None) -> str:
+    if one is None or one.origin == "today":
+        return MISSING
+    if one.origin in UA_ORIGINS or one.flow is None or one.share is None:
+        return UA_ORIGINS[one.origin]
+    kind = KINDS[one.kind]
+    low, share, high = (f"{100.0 * value:.0f}" for value in (kind.low, one.share, kind.high))
+    return f"flow × {one.flow:.2f}; {share} % ({low} to {high} %)"
 
 
 def _run_heading(comparison: Comparison, units: UnitSystem) -> str:

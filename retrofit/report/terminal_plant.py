@@ -8,7 +8,7 @@ from retrofit.checks.readings import Outcome
 from retrofit.report.agreeing import agreements
 from retrofit.report.found import derived_text
 from retrofit.report.hardware import component_names, verdict_words
-from retrofit.report.plant import cooling_needed_text, has_plant, plant_reason, unmet_text
+from retrofit.report.plant import UA_NOT_MEASURED, cooling_needed_text, has_plant, plant_reason, ua_text, unmet_text
 from retrofit.report.text_table import GAP, Column, paragraph, text_table, width
 from retrofit.study import Comparison, Entry
 from retrofit.study.bands import pair_band
@@ -58,7 +58,7 @@ def plant_text(comparison: Comparison, units: UnitSystem, columns: int, strong: 
         return "\n".join([heading, *(paragraph(text, columns) for text in _nowhere(comparison, without))])
     convention = f"same air, water or brine; to deliver: {cooling_needed_text(comparison, units)}"
     lines = [heading, paragraph(convention, columns), _plant_table(comparison, units)]
-    lines += [paragraph(text, columns) for text in _capped(comparison, units)]
+    lines += [paragraph(text, columns) for text in (*_capped(comparison, units), *_ua_lines(comparison))]
     if any(entry.plant and not entry.plant.is_covered for entry in comparison.entries):
         lines.append(paragraph(f"{OUTSIDE} outside the data of the compressor: carried on beyond them.", columns))
     lines += [paragraph(absent(comparison, entry), columns) for entry in without]
@@ -94,6 +94,19 @@ def _capped(comparison: Comparison, units: UnitSystem) -> Iterator[str]:
         wanted = units.text(kind, comparison.case.duty.useful_superheat_K)
         told = f"Useful superheat below the {wanted} {unit} set, all that the evaporator gives"
         yield f"{told}: {', '.join(found)} {unit}."
+
+
+def _ua_lines(comparison: Comparison) -> list[str]:
+    """Return what each candidate does to the conductances, if it is calculated or given for any."""
+    found = [
+        f"{entry.refrigerant.designation} {ua_text(entry.plant.ua_factors[0])} and {ua_text(entry.plant.ua_factors[1])}"
+        for entry in comparison.candidates
+        if entry.plant and any(one.high != 1.0 for one in entry.plant.ua_factors)
+    ]
+    if not found:
+        return []
+    head = f"UA of evaporator and condenser over today's, {UA_NOT_MEASURED}, with 90 % band: "
+    return [f"{head}{'; '.join(found)}."]
 
 
 def _plant_table(comparison: Comparison, units: UnitSystem) -> str:

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, fields, replace
+from dataclasses import dataclass, field, fields, replace
 
 import numpy as np
 from numpy.typing import ArrayLike
@@ -20,6 +20,7 @@ from retrofit.equipment.balance import (
 from retrofit.equipment.exchanger import Secondary
 from retrofit.errors import NoSolutionError
 from retrofit.properties import Fluid
+from retrofit.study.conductance import Films, UAFactors, films, ua_factors
 from retrofit.study.efficiencies import CompressorModel
 from retrofit.study.operating import balanced, operating
 from retrofit.study.performance import as_numbers
@@ -39,6 +40,7 @@ class ExistingPlant:
         needed_W: Cooling that the plant has to deliver.
         today_W: Cooling of the plant today, running at full.
         start_K: Evaporating and condensing dew temperature of today's point, to start a solution from.
+        cycle, films: Today's refrigerant at the temperatures of the case, and in both exchangers there.
     """
 
     case: Case
@@ -47,6 +49,20 @@ class ExistingPlant:
     needed_W: FloatArray
     today_W: FloatArray
     start_K: tuple[FloatArray, FloatArray]
+    cycle: Cycle
+    films: Films
+    _factors: dict[str, UAFactors] = field(default_factory=dict, compare=False, repr=False)
+
+    def ua_factors(self, behaviour: Fluid) -> UAFactors:
+        """Return what a refrigerant does to both conductances, worked out once.
+
+        Args:
+            behaviour: The refrigerant.
+        """
+        name = behaviour.designation
+        if name not in self._factors:
+            self._factors[name] = ua_factors(self.case, self.films, self.cycle, behaviour)
+        return self._factors[name]
 
 
 def existing_plant(
@@ -92,7 +108,8 @@ def existing_plant(
         subcooling_share=_subcooling_share(cycle, condenser),
     )
     start = cycle.T_evap_dew_K, cycle.T_cond_dew_K
-    return ExistingPlant(case, machine, model, np.minimum(case.duty.cooling_W, cooling), cooling, start)
+    needed = np.minimum(case.duty.cooling_W, cooling)
+    return ExistingPlant(case, machine, model, needed, cooling, start, cycle, films(existing, cycle))
 
 
 def _open(difference_K: FloatArray) -> FloatArray:
@@ -138,12 +155,14 @@ def run_installed(plant: ExistingPlant, behaviour: Fluid, cycle: Cycle, T_hottes
     Returns: Full speed, the same cooling, how the plant meets its duty, and the hottest day.
     Raises: NoSolutionError with the reason if the plant does not balance.
     """
-    factors = _film_factors(plant.case, behaviour.designation)
-    # At full with the films of the case; the same cooling; at full with equal films, to show what they do; and at
-    # full on the hottest day: all in one, since few conditions take as long as one.
+    found_factors = plant.ua_factors(behaviour)
+    factors = found_factors.told[0].factor, found_factors.told[1].factor
+    # At full with the factors; the same cooling; at full with both at 1, to show what they do; and at full on the
+    # hottest day: all in one, since few conditions take as long as one.
     columns = 3 if T_hottest_K is None else 4
-    films = np.array([[*[factor] * 2, 1.0, factor][:columns] for factor in factors])
-    machine = _with_films(_machine(plant, behaviour), films)
+    machine = _with_factors(
+        _machine(plant, behaviour), np.array([[*[factor] * 2, 1.0, factor][:columns] for factor in factors])
+    )
     cooling, starts = [np.nan, float(plant.today_W), np.nan], (cycle.T_evap_dew_K, cycle.T_cond_dew_K)
     if T_hottest_K is not None:
         usual_K = float(np.asarray(machine.condenser.secondary.T_in_K))
@@ -164,8 +183,8 @@ def run_installed(plant: ExistingPlant, behaviour: Fluid, cycle: Cycle, T_hottes
         same_cooling=same,
         operation=_operation(plant, behaviour, every, factors),
         is_covered=bool(is_covered[0]),
-        film_factors=factors,
-        cooling_with_equal_films_W=float(every.cooling_W[2]),
+        ua_factors=found_factors.told,
+        cooling_with_equal_ua_W=float(every.cooling_W[2]),
         conductances_W_per_K=(float(np.asarray(conductances[0])[0]), float(np.asarray(conductances[1])[0])),
         residual=float(found.residual[:2].max()),
         hottest=as_numbers(every, 3) if T_hottest_K is not None and not found.reason[3] else None,
@@ -185,7 +204,7 @@ def machine_at(
         T_cond_in_K: At the inlet of the condenser. [K]
     Returns: The machine, and evaporating and condensing dew temperature: today's, moved with the media. [K]
     """
-    machine = _with_films(_machine(plant, behaviour), _film_factors(plant.case, behaviour.designation))
+    machine = _with_factors(_machine(plant, behaviour), plant.ua_factors(behaviour).factors)
     exchangers, starts = [], []
     for exchanger, T_in, start in zip(
         (machine.evaporator, machine.condenser), (T_evap_in_K, T_cond_in_K), plant.start_K, strict=True
@@ -200,14 +219,7 @@ def _machine(plant: ExistingPlant, behaviour: Fluid) -> Machine:
     return replace(plant.machine, efficiencies=plant.model.of(behaviour).at)
 
 
-def _film_factors(case: Case, designation: str) -> tuple[float, float]:
-    """Return the factors on both conductances; today's refrigerant is the measure and has none."""
-    if designation == case.plant.refrigerant or case.evaporator is None or case.condenser is None:
-        return 1.0, 1.0
-    return case.evaporator.film_factor.of(designation), case.condenser.film_factor.of(designation)
-
-
-def _with_films(machine: Machine, factors: ArrayLike) -> Machine:
+def _with_factors(machine: Machine, factors: ArrayLike) -> Machine:
     """Return the machine with its conductances times factors: evaporator first, condenser second."""
     evaporator, condenser = (
         replace(exchanger, conductance_W_per_K=np.asarray(exchanger.conductance_W_per_K) * factor)
@@ -221,7 +233,7 @@ def _operation(
 ) -> Operation[float]:
     """Return how the machine meets the cooling needed, from what it does at full, the first of every condition."""
     full = Performance(**{item.name: getattr(every, item.name)[0] for item in fields(Performance)})
-    machine, compressor = _with_films(_machine(plant, behaviour), factors), plant.case.compressor
+    machine, compressor = _with_factors(_machine(plant, behaviour), factors), plant.case.compressor
     found = operating(behaviour, machine, compressor, full, plant.needed_W, plant.start_K)
     if np.isnan(found.mean_power_W):
         raise NoSolutionError(f"{behaviour.designation} in the plant as installed, at part load: {found.reason}")

@@ -95,6 +95,43 @@ class Operation(Generic[Number]):
 
 
 @dataclass(frozen=True)
+class UAFactor:
+    """Conductance of an exchanger with a refrigerant over that with today's.
+
+    Attributes:
+        factor: The factor.
+        low, high: Limits of its 90 % band; the factor itself where the case gives it.
+        origin: "today" (1), "new plant" (1, sized like today's), "given" by the case, "calculated", or "unknown" (1,
+            no formula or no properties).
+        kind: Kind of exchanger it is calculated for; empty if the case does not say.
+        share: Share of the refrigerant's side in the resistance with today's; None where nothing is calculated.
+        flow: Mass flow over today's on the same machine.
+        glide_K: Glide in the exchanger.
+        film: Ratio of the coefficients of the refrigerant's side.
+    """
+
+    factor: float
+    low: float
+    high: float
+    origin: str
+    kind: str = ""
+    share: float | None = None
+    flow: float | None = None
+    glide_K: float | None = None
+    film: float | None = None
+
+    @classmethod
+    def alone(cls, factor: float, origin: str) -> UAFactor:
+        """Return a factor that is taken as it is.
+
+        Args:
+            factor: The factor. [-]
+            origin: Where it is from. [-]
+        """
+        return cls(factor, factor, factor, origin)
+
+
+@dataclass(frozen=True)
 class Installed:
     """What the existing compressor and exchangers do with a refrigerant at the same air, water or brine.
 
@@ -104,8 +141,8 @@ class Installed:
             be compared at, since a plant that cools less loads its exchangers less.
         operation: How the plant meets the cooling it has to deliver.
         is_covered: Whether the compressor's data reach to this point.
-        film_factors: Factors on the conductance of evaporator and condenser.
-        cooling_with_equal_films_W: Cooling at full with both factors 1: what the factors do.
+        ua_factors: Factors on the conductance of evaporator and condenser.
+        cooling_with_equal_ua_W: Cooling at full with both factors 1: what the factors do.
         conductances_W_per_K: Conductance of evaporator and condenser.
         residual: Largest relative error of the balance.
         hottest: At full on the hottest day; None if its temperature is not known or the plant does not balance there.
@@ -118,8 +155,8 @@ class Installed:
     same_cooling: Performance[float]
     operation: Operation[float]
     is_covered: bool
-    film_factors: tuple[float, float]
-    cooling_with_equal_films_W: float
+    ua_factors: tuple[UAFactor, UAFactor]
+    cooling_with_equal_ua_W: float
     conductances_W_per_K: tuple[float, float]
     residual: float
     hottest: Performance[float] | None = None

@@ -5,9 +5,10 @@ import pickle
 import pytest
 from CoolProp.CoolProp import PropsSI
 
-from retrofit.case import FilmFactors, meaning, quantity
+from retrofit.case import UAFactors, meaning, quantity
 from retrofit.case.exchangers import MEDIUM_HEATS
 from retrofit.case.model import FIELDS, TABLES, CaseFile
+from retrofit.errors import CaseFileError
 from retrofit.units import IP, SI, parse_quantity, standard_atmosphere_Pa
 
 START = """\
@@ -188,25 +189,40 @@ def test_motor_and_control_of_the_compressor_are_read(case):
 
 
 def test_an_exchanger_given_takes_its_own_defaults_only(case):
-    """The side that is there assumes equal conductance and no pressure drop; the other side assumes nothing."""
+    """The side that is there calculates its conductance and assumes no pressure drop; the other assumes nothing."""
     read = case(with_("[evaporator]\n" + EXCHANGER))
 
     assert (read.evaporator.inlet_K, read.evaporator.outlet_K) == (275.15, 270.15)
     assert (read.evaporator.arrangement, read.evaporator.pressure_drop_K) == ("crossflow", 0.0)
-    assert read.evaporator.film_factor.of("R448A") == 1.0
-    assert keys_of(read) == ["evaporator.film_factor", "evaporator.pressure_drop"]
+    assert read.evaporator.ua_factor.of("R448A") is None
+    assert keys_of(read) == ["evaporator.ua_factor", "evaporator.pressure_drop"]
     assert read.condenser is None
 
 
 def test_conductance_can_be_given_for_each_refrigerant(case):
-    """A table names refrigerants as people write them; what it leaves out is taken as today's, and said so."""
-    read = case(with_("[condenser]\nfilm_factor = {r-448a = 1.05, R32 = 0.9}\n"))
+    """A table names refrigerants as people write them; what it leaves out is calculated, and said so."""
+    read = case(with_("[condenser]\nua_factor = {r-448a = 1.05, R32 = 0.9}\n"))
 
-    assert read.condenser.film_factor == FilmFactors(1.0, (("R448A", 1.05), ("R32", 0.9)))
-    assert [read.condenser.film_factor.of(name) for name in ("R448A", "R449A")] == [1.05, 1.0]
+    assert read.condenser.ua_factor == UAFactors(None, (("R448A", 1.05), ("R32", 0.9)))
+    assert [read.condenser.ua_factor.of(name) for name in ("R448A", "R449A")] == [1.05, None]
     taken = {default.key: default.shown_text for default in read.defaults}
-    assert taken["condenser.film_factor"] == "1.0 for R449A"
-    assert read.given["condenser.film_factor"] == "r-448a = 1.05, R32 = 0.9"
+    assert taken["condenser.ua_factor"] == "calculated for R449A"
+    assert read.given["condenser.ua_factor"] == "r-448a = 1.05, R32 = 0.9"
+
+
+def test_conductance_can_be_one_number_or_the_word(case):
+    """One number holds for every candidate; "calculated" says what leaving the key out says."""
+    given = case(with_("[condenser]\nua_factor = 0.95\n")).condenser.ua_factor
+    word = case(with_('[condenser]\nua_factor = "calculated"\n')).condenser.ua_factor
+
+    assert (given.of("R448A"), given.of("R32")) == (0.95, 0.95)
+    assert word == UAFactors()
+
+
+def test_the_old_name_of_a_key_is_answered_with_the_new_one(case):
+    """Who wrote film_factor is told what it is called now."""
+    with pytest.raises(CaseFileError, match="film_factor is called ua_factor now; write ua_factor in"):
+        case(with_("[evaporator]\nfilm_factor = 1.0\n"))
 
 
 @pytest.mark.parametrize("medium", MEDIUM_HEATS)
@@ -416,11 +432,11 @@ def test_every_table_of_the_file_is_known():
         ("", "[evaporator]\nspecific_heat = 4.19", "evaporator.specific_heat", 'such as "4.19 kJ/(kg K)"'),
         ("", "[evaporator]\nspecific_heat = '4190 kJ/(kg K)'", "evaporator.specific_heat", "10 kJ/(kg K)"),
         ("", "[evaporator]\narrangement = 'cross'", "evaporator.arrangement", 'did you mean "crossflow"'),
-        ("", "[evaporator]\nfilm_factor = '1.0'", "evaporator.film_factor", "without quotes"),
-        ("", "[evaporator]\nfilm_factor = 11", "evaporator.film_factor", "0.1 to 10"),
-        ("", "[evaporator]\nfilm_factor = {R999 = 1.0}", "evaporator.film_factor", "not in the catalogue"),
-        ("", "[evaporator]\nfilm_factor = {R32 = 0}", "evaporator.film_factor", '"R32": "0" is outside'),
-        ("", "[evaporator]\nfilm_factor = {R32 = 1, r-32 = 1}", "evaporator.film_factor", "R-32 is in the table twice"),
+        ("", "[evaporator]\nua_factor = '1.0'", "evaporator.ua_factor", "without quotes"),
+        ("", "[evaporator]\nua_factor = 11", "evaporator.ua_factor", "0.1 to 10"),
+        ("", "[evaporator]\nua_factor = {R999 = 1.0}", "evaporator.ua_factor", "not in the catalogue"),
+        ("", "[evaporator]\nua_factor = {R32 = 0}", "evaporator.ua_factor", '"R32": "0" is outside'),
+        ("", "[evaporator]\nua_factor = {R32 = 1, r-32 = 1}", "evaporator.ua_factor", "R-32 is in the table twice"),
         ("", "[evaporator]\npressure_drop = '1 bar'", "evaporator.pressure_drop", "a temperature difference is needed"),
         ("evaporator = {inlet = '2 degC'}", "", "plant.evaporator", "a table stands where a word is needed"),
         ("", "[condenser.inlet]", "condenser.inlet", "a table stands where a temperature is needed"),

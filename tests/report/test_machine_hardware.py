@@ -59,6 +59,7 @@ def test_the_plant_as_installed_is_told_where_it_balances(comparison, read):
     }
     assert plant["same_cooling"]["cop"] == found.same_cooling.cop
     assert plant["operation"]["run_time_fraction"] == found.operation.run_time_fraction
-    assert plant["film_factors"] == [1.0, 1.0]
+    assert [plant["ua_factors"][way]["factor"] for way in ("evaporator", "condenser")] == [1.0, 1.0]
+    assert {one["origin"] for one in plant["ua_factors"].values()} == {"today"}
     assert plant["conductances_W_per_K"] == list(found.conductances_W_per_K)
     assert read["candidates"][1]["plant"] is None

@@ -12,6 +12,7 @@ from retrofit.checks import assess
 from retrofit.report import render_html
 from retrofit.report.plant import WHY_SAME_COOLING, plant_reason
 from retrofit.study import compare
+from retrofit.study.result import UAFactor
 
 KELVIN = 273.15
 ROWS = {  # label and unit in SI: value of the result in that unit
@@ -135,21 +136,31 @@ def test_a_point_beyond_the_compressor_s_data_is_marked(assessed, made_at, read_
     assert row[2:] == ["yes", "no", "yes", "yes", "yes", "yes", "–"]
 
 
-def test_film_factors_and_what_they_do_are_told_if_there_are_any(assessed, made_at, read_page):
-    """0.9 and 1.1 stand in their rows, and a cooling of 95 % of that with equal films is −5 %."""
+def test_ua_factors_and_what_they_do_are_told_if_there_are_any(assessed, made_at, read_page):
+    """0.9 of the case and a calculated 0.95 stand in their rows, with what the second rests on; cooling −5 %."""
     result = assessed("harbour-market")
     cooling = result.candidates[0].plant.full.cooling_W
-    table = page_with(result, made_at, read_page, film_factors=(0.9, 1.1), cooling_with_equal_films_W=cooling / 0.95)
+    factors = UAFactor.alone(0.9, "given"), UAFactor(0.95, 0.91, 0.99, "calculated", "dry coil", 0.2, 0.77, 5.0, 0.8)
+    table = page_with(result, made_at, read_page, ua_factors=factors, cooling_with_equal_ua_W=cooling / 0.95)
     labels = {row[0]: row for row in table}
 
-    assert labels["Film factor of the evaporator"][3] == "0.9"
-    assert labels["Film factor of the condenser"][3] == "1.1"
-    assert labels["What the film factors do to the cooling"][3] == "−5"
+    assert labels["UA factor of the evaporator, calculated, not measured"][3] == "0.9"
+    assert labels["UA factor of the condenser, calculated, not measured"][3] == "0.95 (0.91 to 0.99)"
+    assert labels["Flow, share of the film: evaporator"][3] == "as the case gives it"
+    assert labels["Flow, share of the film: condenser"][3] == "flow × 0.77; 20 % (10 to 30 %)"
+    assert labels["What the UA factors do to the cooling"][3] == "−5"
 
 
-def test_without_film_factors_there_are_no_rows_of_them(rows):
+def test_without_ua_factors_there_are_no_rows_of_them(assessed, made_at, read_page):
     """Rows of ones would only take room."""
-    assert not [row for row in rows if "ilm factor" in row[0]]
+    result, ones = assessed("harbour-market"), (UAFactor.alone(1.0, "given"),) * 2
+    entries = [
+        entry if entry.plant is None else replace(entry, plant=replace(entry.plant, ua_factors=ones))
+        for entry in result.candidates
+    ]
+    page = read_page(render_html(replace(result, candidates=tuple(entries)), made_at=made_at))
+
+    assert not [row for row in page.tables["t-comparison"] if "UA factor" in row[0]]
 
 
 def test_a_refrigerant_that_does_not_balance_has_no_numbers_and_its_reason(assessed, made_at, read_page):

@@ -148,15 +148,17 @@ def test_variable_speed_takes_less_power_than_running_part_of_the_time(tmp_path:
     assert plant_of(slowed).operation.mean_power_W < plant_of(fixed).operation.mean_power_W
 
 
-def test_film_factor_is_counted_and_its_effect_shown(tmp_path: Path) -> None:
-    """A poorer film with one candidate costs it cooling, and the cooling without the factor stands beside it."""
-    entry, other, _ = compare(case_of(tmp_path, evaporator="film_factor = {R448A = 0.8}")).candidates
+def test_ua_factor_of_the_case_is_counted_and_its_effect_shown(tmp_path: Path) -> None:
+    """A poorer exchanger with one candidate costs it cooling, and the cooling without it stands beside it."""
+    case = case_of(tmp_path, evaporator="ua_factor = {R448A = 0.8, R452A = 1.0}", condenser="ua_factor = 1.0")
+    entry, other, _ = compare(case).candidates
     found = plant_of(entry)
 
-    assert found.film_factors == (0.8, 1.0)
-    assert found.full.cooling_W < found.cooling_with_equal_films_W
-    assert plant_of(other).film_factors == (1.0, 1.0)
-    assert plant_of(other).full.cooling_W == plant_of(other).cooling_with_equal_films_W
+    assert [one.factor for one in found.ua_factors] == [0.8, 1.0]
+    assert {one.origin for one in found.ua_factors} == {"given"}
+    assert found.full.cooling_W < found.cooling_with_equal_ua_W
+    assert [one.factor for one in plant_of(other).ua_factors] == [1.0, 1.0]
+    assert plant_of(other).full.cooling_W == plant_of(other).cooling_with_equal_ua_W
 
 
 def test_case_without_exchangers_says_what_is_missing(tmp_path: Path) -> None:
@@ -175,7 +177,7 @@ def test_case_without_exchangers_says_what_is_missing(tmp_path: Path) -> None:
 
 def test_plant_without_balance_leaves_other_bases_standing(tmp_path: Path) -> None:
     """A refrigerant that would condense near its critical point has no plant basis but keeps its duty."""
-    entry = compare(case_of(tmp_path, condenser="film_factor = {R448A = 0.15}")).candidates[0]
+    entry = compare(case_of(tmp_path, condenser="ua_factor = {R448A = 0.15}")).candidates[0]
 
     assert entry.plant is None
     assert "R448A in the plant as installed" in str(entry.plant_reason)
@@ -229,7 +231,9 @@ def test_polynomial_reaches_the_cooling_it_states(tmp_path: Path) -> None:
 def test_candidate_outside_the_compressors_data_is_marked(tmp_path: Path) -> None:
     """A refrigerant whose pressure ratio the points do not reach is marked as not covered."""
     narrow = 'efficiency_points = [[4.1, 0.68, 0.88], [4.3, 0.68, 0.87]]\nswept_volume = "201 m3/h"'
-    found = compare(case_of(tmp_path, compressor=narrow))
+    # Exchangers alike, so that the ratio at which the plant settles is the refrigerant's own.
+    alike = "ua_factor = 1.0"
+    found = compare(case_of(tmp_path, compressor=narrow, evaporator=alike, condenser=alike))
 
     assert plant_of(found.existing).is_covered
     assert not plant_of(found.candidates[2]).is_covered
@@ -371,7 +375,7 @@ def test_a_search_at_other_media_begins_where_they_moved_to(tmp_path: Path) -> N
 def test_the_residual_told_is_the_larger_one(
     errors: tuple[float, float], tmp_path: Path, monkeypatch: pytest.MonkeyPatch
 ) -> None:
-    """Of full speed and same cooling; what shows the effect of films does not count."""
+    """Of full speed and same cooling; what shows the effect of the UA factors does not count."""
     solve = installed.balance
 
     def told(*arguments: object) -> object:
