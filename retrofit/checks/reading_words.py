@@ -209,9 +209,9 @@ def calibration_words(comparison: Comparison) -> tuple[str, ...]:
         return ()
     if found.is_applied and found.ratio is not None and found.efficiency is not None:
         return (
-            f"Calibrated: {_powers(found)}, {found.ratio:.2f} times as much. Motor and drive together count as "
-            f"{found.efficiency:.1%} efficient, alike for every option: electrical power, energy, emissions and money "
-            f"are made with that. COP against today is unaffected.{_kept_by_makers(comparison)}",
+            f"Calibrated: {_powers(found)}, {found.ratio:.2f} times as much. Motor and drive count as "
+            f"{found.efficiency:.1%} efficient for every option, in electrical power, energy, emissions and money; COP "
+            f"against today is unaffected.{_kept_by_makers(comparison)}",
         )
     return (f"Not calibrated, though the case asks for it: {_why_not_calibrated(found)}.",)
 

@@ -73,7 +73,7 @@ def test_what_is_assumed_is_said(text):
     """The meter, the seed and the limits assumed stand in words."""
     flat = " ".join(text.split())
 
-    assert "ratio 1.09" in flat
+    assert "ratio 1.02" in flat
     assert "Calibrated: power 54 kW read" in flat
     assert "with seed 1" in flat
     assert "Plus or minus assumed for: " in flat
