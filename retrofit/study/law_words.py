@@ -117,8 +117,11 @@ def cited(row: LawRow) -> str:
 
     Edition and address are those of its table, which the section on law lists once.
     """
-    known = "verified" if row.is_verified else NOT_VERIFIED
-    return f"{source_text(row)}; read {row.date_checked}, {known}"
+    return f"{source_text(row)}; {_known(row)}"
+
+
+def _known(row: LawRow) -> str:
+    return f"read {row.date_checked}, {'verified' if row.is_verified else NOT_VERIFIED}"
 
 
 def brief(row: LawRow) -> str:
@@ -128,8 +131,9 @@ def brief(row: LawRow) -> str:
 
 
 def line(row: LawRow) -> str:
-    """Return a row in one paragraph, with its source and what to check."""
-    return " ".join(part for part in (*_parts(row), f"{cited(row)}: check the current text.") if part)
+    """Return a row in one paragraph, with document, clause, edition and address, and what to check."""
+    source = "; ".join(part for part in (source_text(row), row.edition, row.address) if part)
+    return " ".join(part for part in (*_parts(row), f"{source}; {_known(row)}: check the current text.") if part)
 
 
 def _parts(row: LawRow) -> tuple[str, ...]:

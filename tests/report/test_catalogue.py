@@ -109,10 +109,10 @@ def test_every_refrigerant_carries_cautions(everything):
 def test_the_list_has_a_row_for_each_and_says_what_is_not_stated():
     """One line a refrigerant, with class and three editions of GWP; a class not known is not left blank."""
     lines = catalogue_text([find(name) for name in ("R404A", "R1123")], str).split("\n")
-    r404a, r1123 = (next(line for line in lines if line.startswith(name)) for name in ("R404A", "R1123"))
+    r404a, r1123 = (next(line for line in lines if line.startswith(name)) for name in ("R-404A", "R-1123"))
 
-    assert re.split(r"\s{2,}", r404a)[:5] == ["R404A", "A1", "3922", "3943", "4728"]  # sums over IPCC editions
-    assert "R125/R143a/R134a 44/52/4" in r404a
+    assert re.split(r"\s{2,}", r404a)[:5] == ["R-404A", "A1", "3922", "3943", "4728"]  # sums over IPCC editions
+    assert "R-125/R-143a/R-134a 44/52/4" in r404a
     assert "not stated" in r1123
 
 
@@ -131,7 +131,7 @@ def test_one_refrigerant_is_shown_with_every_field_and_source(name):
 
 def test_a_blend_is_shown_with_its_components():
     """Percentages alone do not say of what."""
-    assert refrigerant_text(find("R407C"), 100, str).startswith("R407C  R32/R125/R134a 23/25/52\n")
+    assert refrigerant_text(find("R407C"), 100, str).startswith("R-407C  R-32/R-125/R-134a 23/25/52\n")
 
 
 def test_values_in_the_text_are_those_of_the_catalogue():

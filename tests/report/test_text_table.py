@@ -8,11 +8,11 @@ def test_numbers_stand_right_and_words_left():
     columns = [Column("Name", "", is_words=True), Column("COP"), Column("Power", "kW")]
 
     assert text_table(columns, [["R1", "3.1", "12.5"], ["R1234yf", "12", "7"]]).split("\n") == [
-        "Name     COP  Power",
-        "                 kW",
-        "───────────────────",
-        "R1       3.1   12.5",
-        "R1234yf   12      7",
+        "Name      COP  Power",
+        "                  kW",
+        "────────────────────",
+        "R-1       3.1   12.5",
+        "R-1234yf   12      7",
     ]
 
 
