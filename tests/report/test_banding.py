@@ -52,7 +52,7 @@ def test_report_and_terminal_name_the_wider_band_and_the_reason(weak, page):
     """Both say the base band, for whom it is wider, by how much and why."""
     text, shown = flat(comparison_text(weak, SI, 100)), flat(page.text)
 
-    assert f"Wider for R438A: {WIDER}: model graded weak" in text
+    assert f"Wider for R-438A: {WIDER}: model graded weak" in text
     assert f"Wider for R-438A: {WIDER.replace('%', ' %')}: model graded weak" in shown
     for found in (text, shown):
         assert "3.5 K at the boiling point" in found
@@ -104,7 +104,7 @@ def test_table_and_terminal_mark_a_difference_inside_its_own_band(weak, change, 
     row = next(row for row in rows if row[0] == "Cooling against today")
     text = comparison_text(comparison, SI, 100)
     table = text[text.index("Same compressor, ") :]
-    line = next(line for line in table.splitlines() if line.startswith("R438A"))
+    line = next(line for line in table.splitlines() if line.startswith("R-438A"))
 
     assert row[3].startswith("≈") == is_near
     assert bool(re.search(r"≈ −14\.9 %", line)) == is_near
